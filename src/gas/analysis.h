@@ -1,0 +1,87 @@
+/* A gas as somebody stated it: parts that may or may not add up.
+
+   An analysis keeps the amounts as stated, per one mole or one kilogram of the whole (`whole`
+   says which), so that its total can be looked at before and after each treatment.  A treatment
+   makes another analysis and says in a `struct treatment` what it took, added or scaled.
+   analysis_close turns an analysis into a composition.                                          */
+#ifndef GAS_ANALYSIS_H
+#define GAS_ANALYSIS_H
+
+#include <stdbool.h>
+#include <stddef.h>
+#include "support/check.h"
+#include "gas/composition.h"
+
+enum whole { WHOLE_MOLE, WHOLE_MASS, WHOLE_NONE };   /* NONE: amounts or masses, no total to meet */
+
+struct analysis {
+  size_t count;
+  const struct part *parts;              /* mol per mol or per kg of the whole; mol for NONE */
+  enum whole whole;
+  bool dry;                              /* declared `dry` */
+};
+
+/* One part as stated.  SPECIES or GAS (a nested gas) is set, not both.  */
+enum amount_basis { AMOUNT_MOLE_FRACTION, AMOUNT_MASS_FRACTION, AMOUNT_MOLES, AMOUNT_MASS,
+                    AMOUNT_MOLAR_CONCENTRATION,     /* mol of the part per mol of ideal gas, from mg/Nm3 */
+                    AMOUNT_REST };
+struct stated_part {
+  const struct species *species;
+  const struct composition *gas;
+  enum amount_basis basis;
+  double amount;                         /* mol/mol, kg/kg, mol or kg */
+};
+
+/* Makes an analysis from stated parts, bases mixed at will (an amount in mg/Nm3 arrives as
+   mol/mol).  With a `rest` the total is 1 and the rest takes what the others leave: mixed molar
+   and mass bases are solved exactly.  Same species are added together.  Faults, with *AT the
+   index of the part: gas-total (with rest, the others exceed one), amount-range (negative or not
+   finite), basis-mixed (amounts or masses beside shares), rest-twice.                          */
+const struct analysis *analysis_make (struct arena *, size_t n, const struct stated_part parts[],
+                                      bool dry, size_t *at, struct fault *) MUST_CHECK;
+const struct analysis *analysis_of_composition (struct arena *,
+                                                const struct composition *) MUST_CHECK;
+
+/* What the parts add up to on the basis of the whole; 1 for WHOLE_NONE.  */
+double analysis_total (const struct analysis *);
+
+struct treatment {
+  double total_before, total_after;      /* on the basis of the whole */
+  double factor;                         /* what every part was multiplied by; 1: none */
+  double added;                          /* to the balance component, of the whole */
+  double removed;                        /* taken away, of the whole (mol/mol or kg/kg) */
+  const char *tracer, *skipped;          /* species keys; parts of the removed gas not in the list */
+};
+
+/* All parts scaled to a total of 1.  */
+const struct analysis *analysis_normalised (struct arena *, const struct analysis *,
+                                            struct treatment *, struct fault *) MUST_CHECK;
+/* BALANCE takes the difference to 1 (added if it was not there); kind negative-part if it would
+   fall below zero.                                                                             */
+const struct analysis *analysis_normalised_into (struct arena *, const struct analysis *,
+                                                 const struct species *balance,
+                                                 struct treatment *, struct fault *) MUST_CHECK;
+/* Takes one species out of the stated figures (not rescaled).  Kind no-such-part if absent.  */
+const struct analysis *analysis_without (struct arena *, const struct analysis *,
+                                         const struct species *, struct treatment *,
+                                         struct fault *) MUST_CHECK;
+/* Takes GAS (air) out: N tracers together set how much, its other parts go with it; parts of GAS
+   that the analysis does not hold are skipped and named.  Kinds no-such-part (no tracer in it),
+   negative-part (less of a part than goes with the tracer).                                    */
+const struct analysis *analysis_without_gas (struct arena *, const struct analysis *,
+                                             const struct composition *gas, size_t n,
+                                             const struct species *const tracers[],
+                                             struct treatment *, struct fault *) MUST_CHECK;
+/* Water away, the rest scaled to a total of 1 if the analysis was closed, else not.  A gas that
+   has none stays as it is.                                                                     */
+const struct analysis *analysis_dried (struct arena *, const struct analysis *,
+                                       const struct species *water, struct treatment *,
+                                       struct fault *) MUST_CHECK;
+
+/* The composition of an analysis whose total is within TOLERANCE (relative, 0.005) of 1; *SCALED
+   says by what it was multiplied.  Kind gas-open otherwise (facts: the total in %, its unit).  */
+const struct composition *analysis_close (struct arena *, const struct analysis *,
+                                          double tolerance, double *scaled,
+                                          struct fault *) MUST_CHECK;
+
+#endif

@@ -1,0 +1,80 @@
+/* What a statement answers, before anybody prints it.
+
+   A result is made by the language in the arena of the line and printed by `report`, which sees
+   nothing of gases.  Everything in it is borrowed from that arena or from tables.               */
+#ifndef RESULT_RESULT_H
+#define RESULT_RESULT_H
+
+#include <stdbool.h>
+#include <stddef.h>
+#include "support/message.h"
+
+struct arena; struct workings;
+
+/* One figure with its basis: a row that makes sense when cut out and sent to somebody.  */
+struct answer {
+  const char *what;               /* "raw", "CH4 of raw" */
+  const char *label;              /* behind `as`, or null */
+  double value;
+  const char *unit;               /* "" for a plain number */
+  double uncertainty;             /* standard, in the unit; NAN: none */
+  const char *moisture;           /* "dry", "wet" or null */
+  const char *basis;              /* the rest: "0 degC, 101.325 kPa, ideal-gas volume"; or null */
+  struct answer *next;
+};
+
+/* A line under the answer: kind and facts; the sentence stands in tables/messages.tsv.  */
+struct remark {
+  enum message kind;
+  const char *fact[MESSAGE_FACTS];
+  const char *alternative;        /* "at 15 degC"; null: no bracket */
+  double effect;                  /* what the alternative would do: value/answer - 1; NAN: none */
+  struct remark *next;
+};
+
+/* A card: one thing with all its figures.  */
+struct cell { const char *text; double value; bool is_number; };     /* text wins; both empty: blank */
+struct card_row { const char *name; const struct cell *cells; struct card_row *next; };
+struct card_line { const char *text; struct card_line *next; };
+struct card {
+  const char *title, *kind;       /* "raw"; "gas, dry, 5 parts" */
+  size_t columns;
+  const char *const *headings;    /* of the columns, without the name column */
+  struct card_row *rows, **last_row;
+  struct card_line *lines, **last_line;
+};
+
+/* A page of help: the form, one sentence, a line that runs; then names of other topics.  */
+struct help_entry { const char *say, *get, *example; struct help_entry *next; };
+struct help_page { const char *title; struct help_entry *entries, **last; };
+
+struct result {
+  struct arena *arena;
+  const char *statement;          /* as typed, without comment */
+  struct answer *answers, **last_answer;
+  struct remark *taken, *notes, *cautions;
+  struct remark **last_taken, **last_note, **last_caution;
+  struct card *cards;             /* usually none or one */
+  struct help_page *help;
+  bool quit;
+};
+
+void result_init (struct result *, struct arena *, const char *statement);
+struct answer *result_answer (struct result *);          /* appends an empty one (NAN, "") */
+/* Appends a remark where its severity belongs unless the same one is there already.  */
+struct remark *result_remark (struct result *, enum message, const char *fact1,
+                              const char *fact2);
+struct card *result_card (struct result *, const char *title, const char *kind, size_t columns,
+                          const char *const headings[]);
+/* A new row with `columns` blank cells; fill them in.  */
+struct cell *card_add_row (struct result *, struct card *, const char *name);
+void card_add_line (struct result *, struct card *, const char *text);
+struct help_page *result_help (struct result *, const char *title);
+void help_add (struct result *, struct help_page *, const char *say, const char *get,
+               const char *example);
+/* Nothing to print?  */
+bool result_is_empty (const struct result *);
+/* Largest effect first; equal ones and those without keep their order.  */
+void result_sort_taken (struct result *);
+
+#endif

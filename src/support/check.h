@@ -1,0 +1,13 @@
+/* Marks for functions whose result or arguments the compiler should watch.  */
+#ifndef SUPPORT_CHECK_H
+#define SUPPORT_CHECK_H
+
+#if defined __GNUC__
+# define MUST_CHECK __attribute__ ((warn_unused_result))
+# define PRINTF_LIKE(format, first) __attribute__ ((format (printf, format, first)))
+#else
+# define MUST_CHECK
+# define PRINTF_LIKE(format, first)
+#endif
+
+#endif

@@ -1,0 +1,24 @@
+/* Numbers read and written, the same in every locale.  */
+#ifndef SUPPORT_NUMBER_H
+#define SUPPORT_NUMBER_H
+
+#include <stdbool.h>
+#include <stddef.h>
+#include "support/check.h"
+
+struct text;
+
+/* Reads a plain decimal number (digits, one '.', exponent; digits grouped by single '_') that
+   fills exactly N bytes.  No hexadecimal, no inf, no nan; false also when it overflows (then
+   *TOO_LARGE is set).                                                                         */
+bool number_read (const char *bytes, size_t n, double *value, bool *too_large) MUST_CHECK;
+
+/* Appends VALUE in the shortest form of %.15g, %.16g, %.17g that reads back equal.  */
+void number_write_exact (struct text *, double value);
+
+/* Appends VALUE rounded to DIGITS significant digits, in plain decimals between 1e-4 and 1e9,
+   with an exponent outside; trailing zeros are kept (0.400000), as a laboratory writes them.
+   -0 prints as 0.                                                                             */
+void number_write (struct text *, double value, int digits);
+
+#endif

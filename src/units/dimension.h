@@ -1,0 +1,22 @@
+/* Dimensions: the exponents of length, mass, time, temperature and amount of substance.  */
+#ifndef UNITS_DIMENSION_H
+#define UNITS_DIMENSION_H
+
+#include <stdbool.h>
+
+struct dimension { signed char length, mass, time, temperature, amount; };
+
+bool dimension_equal (struct dimension, struct dimension);
+struct dimension dimension_times (struct dimension, struct dimension);
+struct dimension dimension_over (struct dimension, struct dimension);
+struct dimension dimension_power (struct dimension, int);
+bool dimension_is_none (struct dimension);
+/* "mass per time", "pressure", ... in the trade's words; null where there is no word for it.  */
+const char *dimension_name (struct dimension);
+
+extern const struct dimension DIMENSION_NONE, DIMENSION_LENGTH, DIMENSION_MASS, DIMENSION_TIME,
+  DIMENSION_TEMPERATURE, DIMENSION_AMOUNT, DIMENSION_VOLUME, DIMENSION_PRESSURE,
+  DIMENSION_ENERGY, DIMENSION_POWER, DIMENSION_MASS_FLOW, DIMENSION_MOLAR_FLOW,
+  DIMENSION_VOLUME_FLOW, DIMENSION_DENSITY, DIMENSION_MOLAR_DENSITY, DIMENSION_MOLAR_MASS;
+
+#endif
