@@ -1,0 +1,3 @@
+# The manual pages.
+
+dist_man_MANS =

@@ -1,0 +1,98 @@
+# Turns tables of facts into C: one string a row, header first, and the list of all tables.
+#
+# Refuses a row with a wrong number of columns, a row without a source, and a row out of order:
+# rows are sorted by the bytes of their first column, unless a remark says "# order: as written".
+# Run with LC_ALL=C, or the order is another one.
+
+function complain(line, what) {
+  printf "%s:%d: %s\n", FILENAME, line, what > "/dev/stderr"
+  failed = 1
+  exit 1
+}
+
+# S as a C string.  '?' is escaped because "??=" would be a trigraph.
+function quoted(s,   i, c, made) {
+  made = ""
+  for (i = 1; i <= length(s); i++) {
+    c = substr(s, i, 1)
+    if (c == "\\" || c == "\"" || c == "?")
+      made = made "\\" c
+    else if (c == "\t")
+      made = made "\\t"
+    else
+      made = made c
+  }
+  return "\"" made "\""
+}
+
+function finish_table() {
+  if (name == "")
+    return
+  if (columns == 0)
+    complain(lines, "no line names the columns")
+  print "  NULL\n};\n"
+}
+
+BEGIN {
+  FS = "\t"
+  print "/* Made from the tables; a change belongs there.  */"
+  print "#include \"config.h\""
+  print "#include <stddef.h>"
+  print "#include \"support/table.h\"\n"
+}
+
+FNR == 1 {
+  finish_table()
+  name = FILENAME
+  sub(/^.*\//, "", name)
+  sub(/\.tsv$/, "", name)
+  if (name !~ /^[a-z][a-z0-9_]*$/)
+    complain(1, "a table's name is of small letters, digits and '_'")
+  names[++count] = name
+  columns = 0
+  as_written = 0
+  last = ""
+  printf "static const char *const %s_rows[] = {\n", name
+}
+
+{ lines = FNR }
+
+/\r$/ { complain(FNR, "the line ends in a carriage return") }
+
+/^#/ {
+  if ($0 ~ /^# *order: as written *$/)
+    as_written = 1
+  next
+}
+
+/^$/ { complain(FNR, "an empty line") }
+
+columns == 0 {
+  columns = NF
+  if ($NF != "source")
+    complain(FNR, "the last column is not 'source'")
+  print "  " quoted($0) ","
+  next
+}
+
+NF != columns { complain(FNR, NF " columns where there are " columns) }
+$1 == "" { complain(FNR, "no key in the first column") }
+$NF ~ /^[ ]*$/ { complain(FNR, "no source") }
+!as_written && ($1 "") < (last "") { complain(FNR, "'" $1 "' stands behind '" last "'") }
+
+{
+  last = $1
+  print "  " quoted($0) ","
+}
+
+END {
+  if (failed)
+    exit 1
+  finish_table()
+  if (failed)
+    exit 1
+  print "const struct table_text table_built_in[] = {"
+  for (i = 1; i <= count; i++)
+    printf "  { \"%s\", %s_rows },\n", names[i], names[i]
+  print "  { NULL, NULL }\n};"
+}

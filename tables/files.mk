@@ -1,0 +1,33 @@
+# The tables of facts: embedded in the program, and installed to be read.
+
+tables = \
+  %D%/messages.tsv
+
+tablesdir = $(pkgdatadir)/tables
+dist_tables_DATA = $(tables)
+
+demodir = $(pkgdatadir)/tables/demo
+dist_demo_DATA =
+
+# Made from the tables, in the build tree only: every table as text, the kinds of message, and
+# what stands behind each kind.
+BUILT_SOURCES += made/message_kinds.h made/message_rows.h made/tables.c
+CLEANFILES += made/message_kinds.h made/message_rows.h made/tables.c
+EXTRA_DIST += src/support/embed.awk src/support/message_kinds.awk
+
+made/tables.c: $(tables) src/support/embed.awk
+	$(AM_V_GEN)$(MKDIR_P) made \
+	  && (cd $(srcdir) && LC_ALL=C $(AWK) -f src/support/embed.awk $(tables)) > made/tables.new \
+	  && mv -f made/tables.new $@
+
+made/message_kinds.h: %D%/messages.tsv src/support/message_kinds.awk
+	$(AM_V_GEN)$(MKDIR_P) made \
+	  && (cd $(srcdir) && LC_ALL=C $(AWK) -v make=kinds -f src/support/message_kinds.awk \
+	        %D%/messages.tsv) > made/kinds.new \
+	  && mv -f made/kinds.new $@
+
+made/message_rows.h: %D%/messages.tsv src/support/message_kinds.awk
+	$(AM_V_GEN)$(MKDIR_P) made \
+	  && (cd $(srcdir) && LC_ALL=C $(AWK) -v make=rows -f src/support/message_kinds.awk \
+	        %D%/messages.tsv) > made/rows.new \
+	  && mv -f made/rows.new $@
