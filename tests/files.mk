@@ -11,8 +11,30 @@ AM_TESTS_ENVIRONMENT = \
   ASAN_OPTIONS=exitcode=99; export ASAN_OPTIONS; \
   UBSAN_OPTIONS=print_stacktrace=1:exitcode=99; export UBSAN_OPTIONS;
 
-# Suites in C, one program each, linked with the layer they test and those beneath it.
+# Suites in C, one program each (tests/modules/LAYER/t_NAME), linked with the runner, the layer they
+# test and the layers beneath it: a call upward does not link.
 suites =
+with_support = %D%/libtest.a $(upto_support) $(CUNIT_LIBS)
+with_units = %D%/libtest.a $(upto_units) $(CUNIT_LIBS)
+with_gas = %D%/libtest.a $(upto_gas) $(CUNIT_LIBS) $(GSL_LIBS)
+with_eos = %D%/libtest.a $(upto_eos) $(CUNIT_LIBS) $(GSL_LIBS)
+with_property = %D%/libtest.a $(upto_property) $(CUNIT_LIBS) $(GSL_LIBS)
+with_stream = %D%/libtest.a $(upto_stream) $(CUNIT_LIBS) $(GSL_LIBS)
+with_result = %D%/libtest.a $(upto_result) $(CUNIT_LIBS) $(GSL_LIBS)
+with_language = %D%/libtest.a $(upto_language) $(CUNIT_LIBS) $(GSL_LIBS)
+with_report = %D%/libtest.a $(upto_report) $(CUNIT_LIBS) $(GSL_LIBS)
+with_shell = %D%/libtest.a $(upto_shell) $(CUNIT_LIBS) $(GSL_LIBS)
+
+include %D%/modules/support/files.mk
+include %D%/modules/units/files.mk
+include %D%/modules/gas/files.mk
+include %D%/modules/eos/files.mk
+include %D%/modules/property/files.mk
+include %D%/modules/stream/files.mk
+include %D%/modules/result/files.mk
+include %D%/modules/language/files.mk
+include %D%/modules/report/files.mk
+include %D%/modules/shell/files.mk
 
 if HAVE_CUNIT
 check_LIBRARIES += %D%/libtest.a

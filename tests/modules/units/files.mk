@@ -1,0 +1,5 @@
+# Suites of the layer units.  One is added by three lines:
+#
+#   suites += %D%/t_NAME
+#   %C%_t_NAME_SOURCES = %D%/t_NAME.c
+#   %C%_t_NAME_LDADD = $(with_units)
