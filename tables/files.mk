@@ -1,7 +1,14 @@
 # The tables of facts: embedded in the program, and installed to be read.
 
 tables = \
-  %D%/messages.tsv
+  %D%/air.tsv \
+  %D%/ambiguous.tsv \
+  %D%/elements.tsv \
+  %D%/exposure.tsv \
+  %D%/flammability.tsv \
+  %D%/messages.tsv \
+  %D%/sources.tsv \
+  %D%/species.tsv
 
 tablesdir = $(pkgdatadir)/tables
 dist_tables_DATA = $(tables)

@@ -8,8 +8,17 @@ SH_LOG_COMPILER = $(SHELL)
 AM_TESTS_ENVIRONMENT = \
   LC_ALL=C.UTF-8; export LC_ALL; \
   GASWRIGHT='$(abs_top_builddir)/gaswright$(EXEEXT)'; export GASWRIGHT; \
+  AWK='$(AWK)'; export AWK; \
   ASAN_OPTIONS=exitcode=99; export ASAN_OPTIONS; \
   UBSAN_OPTIONS=print_stacktrace=1:exitcode=99; export UBSAN_OPTIONS;
+
+# Tests in shell, and what they share.
+EXTRA_DIST += %D%/run.sh %D%/tap.sh $(scripts)
+scripts = \
+  %D%/layers.sh \
+  %D%/sizes.sh \
+  %D%/tables.sh
+TESTS += $(scripts)
 
 # Suites in C, one program each (tests/modules/LAYER/t_NAME), linked with the runner, the layer they
 # test and the layers beneath it: a call upward does not link.

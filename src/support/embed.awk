@@ -1,8 +1,8 @@
 # Turns tables of facts into C: one string a row, header first, and the list of all tables.
 #
 # Refuses a row with a wrong number of columns, a row without a source, and a row out of order:
-# rows are sorted by the bytes of their first column, unless a remark says "# order: as written".
-# Run with LC_ALL=C, or the order is another one.
+# rows are sorted by the bytes of their first column, each key once, unless a remark says
+# "# order: as written" or "# several rows a key".  Run with LC_ALL=C, or the order is another one.
 
 function complain(line, what) {
   printf "%s:%d: %s\n", FILENAME, line, what > "/dev/stderr"
@@ -50,7 +50,7 @@ FNR == 1 {
     complain(1, "a table's name is of small letters, digits and '_'")
   names[++count] = name
   columns = 0
-  as_written = 0
+  as_written = several = 0
   last = ""
   printf "static const char *const %s_rows[] = {\n", name
 }
@@ -62,6 +62,8 @@ FNR == 1 {
 /^#/ {
   if ($0 ~ /^# *order: as written *$/)
     as_written = 1
+  if ($0 ~ /^# *several rows a key *$/)
+    several = 1
   next
 }
 
@@ -79,6 +81,7 @@ NF != columns { complain(FNR, NF " columns where there are " columns) }
 $1 == "" { complain(FNR, "no key in the first column") }
 $NF ~ /^[ ]*$/ { complain(FNR, "no source") }
 !as_written && ($1 "") < (last "") { complain(FNR, "'" $1 "' stands behind '" last "'") }
+!as_written && !several && ($1 "") == (last "") { complain(FNR, "a second row for '" $1 "'") }
 
 {
   last = $1
