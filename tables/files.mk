@@ -7,6 +7,8 @@ tables = \
   %D%/exposure.tsv \
   %D%/flammability.tsv \
   %D%/messages.tsv \
+  %D%/reference_names.tsv \
+  %D%/references.tsv \
   %D%/sources.tsv \
   %D%/species.tsv
 
