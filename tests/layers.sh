@@ -1,6 +1,7 @@
 #!/bin/sh
 # No file includes from a later layer, and every folder of src is a layer.
 set -u
+# shellcheck source=tests/tap.sh
 . "${srcdir:-.}/tests/tap.sh"
 cd "$top" || exit 99
 

@@ -1,6 +1,7 @@
 #!/bin/sh
 # Files and functions stay small enough to be read, and look as the style asks.
 set -u
+# shellcheck source=tests/tap.sh
 . "${srcdir:-.}/tests/tap.sh"
 cd "$top" || exit 99
 

@@ -1,6 +1,7 @@
 #!/bin/sh
 # The tables of facts have their form, and a table that has not stops the build.
 set -u
+# shellcheck source=tests/tap.sh
 . "${srcdir:-.}/tests/tap.sh"
 work=$(mktemp -d) || exit 99
 trap 'rm -rf "$work"' EXIT
@@ -12,6 +13,7 @@ embed() { LC_ALL=C "$awk" -f src/support/embed.awk "$@"; }
 # What the program says of the table $1 (in printf's notation) must be $2.
 refuses() {
   mkdir -p "$work/tables"
+  # shellcheck disable=SC2059  # the table is the format
   printf "$1" > "$work/tables/try.tsv"
   said=$(cd "$work" && LC_ALL=C "$awk" -f "$top/src/support/embed.awk" tables/try.tsv 2>&1 >/dev/null)
   status=$?

@@ -1,9 +1,12 @@
+# shellcheck shell=sh
 # What the tests in shell share: sourced, from a working directory of any kind.
 #
 #   tell "$(list what is wrong)" "name of the check"      good if the list is empty
 #   skip "why" "name of the check"
 #   finish                                                prints the plan; ends the script
 
+# The source tree; the scripts read it.
+# shellcheck disable=SC2034
 top=$(cd "${srcdir:-.}" && pwd) || exit 99
 count=0
 failed=0
