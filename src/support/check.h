@@ -4,10 +4,10 @@
 
 #if defined __GNUC__
 # define MUST_CHECK __attribute__ ((warn_unused_result))
-# define PRINTF_LIKE(format, first) __attribute__ ((format (printf, format, first)))
+# define PRINTF_LIKE(nth, first) __attribute__ ((format (printf, nth, first)))
 #else
 # define MUST_CHECK
-# define PRINTF_LIKE(format, first)
+# define PRINTF_LIKE(nth, first)
 #endif
 
 #endif

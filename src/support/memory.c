@@ -1,0 +1,66 @@
+#include "config.h"
+#include "support/memory.h"
+
+#include <stdint.h>
+#include <stdlib.h>
+
+/* The one variable of this layer that changes: set once, by the shell, before anything else.  */
+static void (*exhausted) (void);
+
+void
+memory_on_exhaustion (void (*handler) (void))
+{
+  exhausted = handler;
+}
+
+static _Noreturn void
+give_up (void)
+{
+  if (exhausted != NULL)
+    exhausted ();
+  abort ();
+}
+
+size_t
+memory_sum (size_t a, size_t b)
+{
+  if (a > SIZE_MAX - b)
+    give_up ();
+  return a + b;
+}
+
+size_t
+memory_product (size_t a, size_t b)
+{
+  if (b != 0 && a > SIZE_MAX / b)
+    give_up ();
+  return a * b;
+}
+
+void *
+memory_get (size_t count, size_t size)
+{
+  size_t bytes = memory_product (count, size);
+  void *memory = calloc (1, bytes > 0 ? bytes : 1);
+
+  if (memory == NULL)
+    give_up ();
+  return memory;
+}
+
+void *
+memory_resize (void *memory, size_t count, size_t size)
+{
+  size_t bytes = memory_product (count, size);
+  void *moved = realloc (memory, bytes > 0 ? bytes : 1);
+
+  if (moved == NULL)
+    give_up ();
+  return moved;
+}
+
+void
+memory_release (void *memory)
+{
+  free (memory);
+}
