@@ -4,6 +4,7 @@
 #ifndef SUPPORT_TEXT_H
 #define SUPPORT_TEXT_H
 
+#include <stdarg.h>
 #include <stdbool.h>
 #include <stddef.h>
 #include "support/check.h"
@@ -20,6 +21,7 @@ void text_add_bytes (struct text *, const char *bytes, size_t n);
 void text_add_char (struct text *, char);
 void text_add_repeated (struct text *, char, size_t times);
 void text_add_format (struct text *, const char *format, ...) PRINTF_LIKE (2, 3);
+void text_add_arguments (struct text *, const char *format, va_list) PRINTF_LIKE (2, 0);
 /* Adds STRING and blanks behind (or, text_add_right, before it) to WIDTH characters.  */
 void text_add_left (struct text *, const char *string, size_t width);
 void text_add_right (struct text *, const char *string, size_t width);
