@@ -22,6 +22,7 @@ struct fault {
   const char *fact[MESSAGE_FACTS];
   const char *hint;                                      /* null: the kind's usual way on */
   struct arena *arena;
+  bool dropping;                                         /* the last one set came too late */
 };
 
 void fault_init (struct fault *, struct arena *);
@@ -31,7 +32,8 @@ void fault_init (struct fault *, struct arena *);
 bool fault_set (struct fault *, enum message, const char *fact1, const char *fact2);
 bool fault_set_at (struct fault *, enum message, struct place, const char *fact1,
                    const char *fact2);
-/* Adds the third and fourth fact; replaces the usual way on.  */
+/* Add the third and fourth fact, replace the usual way on; both belong to the fault set last, and
+   are dropped with it if it came too late.                                                    */
 void fault_facts (struct fault *, const char *fact3, const char *fact4);
 void fault_hint (struct fault *, const char *format, ...) PRINTF_LIKE (2, 3);
 /* Gives a fault without a place this one.  */
