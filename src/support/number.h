@@ -8,9 +8,10 @@
 
 struct text;
 
-/* Reads a plain decimal number (digits, one '.', exponent; digits grouped by single '_') that
-   fills exactly N bytes.  No hexadecimal, no inf, no nan; false also when it overflows (then
-   *TOO_LARGE is set).                                                                         */
+/* Reads a plain decimal number (digits, one '.', exponent; digits before the exponent grouped by
+   single '_') that fills exactly N bytes.  No sign, no hexadecimal, no inf, no nan; false also
+   when it overflows (*TOO_LARGE says whether it did).  The value is the nearest double; what is
+   smaller than the smallest reads as 0.                                                       */
 bool number_read (const char *bytes, size_t n, double *value, bool *too_large) MUST_CHECK;
 
 /* Appends VALUE in the shortest form of %.15g, %.16g, %.17g that reads back equal.  */
