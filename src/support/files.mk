@@ -4,10 +4,15 @@ noinst_LIBRARIES += %D%/libsupport.a
   %D%/arena.c \
   %D%/arena.h \
   %D%/check.h \
+  %D%/decimal.c \
+  %D%/decimal.h \
+  %D%/distance.c \
   %D%/fault.c \
   %D%/fault.h \
   %D%/map.c \
   %D%/map.h \
+  %D%/memory.c \
+  %D%/memory.h \
   %D%/message.c \
   %D%/message.h \
   %D%/number.c \
@@ -17,7 +22,8 @@ noinst_LIBRARIES += %D%/libsupport.a
   %D%/table.c \
   %D%/table.h \
   %D%/text.c \
-  %D%/text.h
+  %D%/text.h \
+  %D%/utf8.c
 
 nodist_%C%_libsupport_a_SOURCES = \
   made/message_kinds.h \
