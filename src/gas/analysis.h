@@ -23,7 +23,7 @@ struct analysis {
 
 /* One part as stated.  SPECIES or GAS (a nested gas) is set, not both.  */
 enum amount_basis { AMOUNT_MOLE_FRACTION, AMOUNT_MASS_FRACTION, AMOUNT_MOLES, AMOUNT_MASS,
-                    AMOUNT_MOLAR_CONCENTRATION,     /* mol of the part per mol of ideal gas, from mg/Nm3 */
+                    AMOUNT_MOLAR_CONCENTRATION,     /* mol per mol of ideal gas, from mg/Nm3 */
                     AMOUNT_REST };
 struct stated_part {
   const struct species *species;
@@ -34,7 +34,9 @@ struct stated_part {
 
 /* Makes an analysis from stated parts, bases mixed at will (an amount in mg/Nm3 arrives as
    mol/mol).  With a `rest` the total is 1 and the rest takes what the others leave: mixed molar
-   and mass bases are solved exactly.  Same species are added together.  Faults, with *AT the
+   and mass bases are solved exactly.  Shares all by mass make a WHOLE_MASS, a molar one among
+   them a WHOLE_MOLE; without a rest such a mixed list adds up to the same total by amount and by
+   mass.  Same species are added together, those of a nested gas too.  Faults, with *AT the
    index of the part: gas-total (with rest, the others exceed one), amount-range (negative or not
    finite), basis-mixed (amounts or masses beside shares), rest-twice.                          */
 const struct analysis *analysis_make (struct arena *, size_t n, const struct stated_part parts[],
@@ -50,7 +52,8 @@ struct treatment {
   double factor;                         /* what every part was multiplied by; 1: none */
   double added;                          /* to the balance component, of the whole */
   double removed;                        /* taken away, of the whole (mol/mol or kg/kg) */
-  const char *tracer, *skipped;          /* species keys; parts of the removed gas not in the list */
+  const char *tracer, *skipped;          /* species keys, parted by commas; null: none.  Skipped:
+                                            parts of the removed gas not in the list */
 };
 
 /* All parts scaled to a total of 1.  */
@@ -65,15 +68,17 @@ const struct analysis *analysis_normalised_into (struct arena *, const struct an
 const struct analysis *analysis_without (struct arena *, const struct analysis *,
                                          const struct species *, struct treatment *,
                                          struct fault *) MUST_CHECK;
-/* Takes GAS (air) out: N tracers together set how much, its other parts go with it; parts of GAS
-   that the analysis does not hold are skipped and named.  Kinds no-such-part (no tracer in it),
-   negative-part (less of a part than goes with the tracer).                                    */
+/* Takes GAS (air) out: N tracers together set how much and vanish, its other parts go with it;
+   parts of GAS that the analysis does not hold are skipped and named.  Kinds no-such-part (no
+   tracer in it), negative-part (less of a part than goes with the tracer).                     */
 const struct analysis *analysis_without_gas (struct arena *, const struct analysis *,
                                              const struct composition *gas, size_t n,
                                              const struct species *const tracers[],
                                              struct treatment *, struct fault *) MUST_CHECK;
-/* Water away, the rest scaled to a total of 1 if the analysis was closed, else not.  A gas that
-   has none stays as it is.                                                                     */
+/* Water away, the rest scaled to a total of 1 if the analysis was closed (its total within
+   ANALYSIS_CLOSED of 1; a caller with another tolerance normalises first), else not.  A gas that
+   has none keeps its figures.  The result is declared dry.  Kind only-water if nothing is left. */
+#define ANALYSIS_CLOSED 0.005
 const struct analysis *analysis_dried (struct arena *, const struct analysis *,
                                        const struct species *water, struct treatment *,
                                        struct fault *) MUST_CHECK;

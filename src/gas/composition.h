@@ -41,7 +41,7 @@ const struct composition *composition_wetted (struct arena *, const struct compo
                                               struct fault *) MUST_CHECK;
 
 /* A volume fraction at one T and P of the unmixed parts (ISO 14912): phi_i = x_i Z_i/sum x_k Z_k,
-   for given Z of the pure parts; and back.                                                     */
+   for given Z of the pure parts.  The way back is composition_make of phi_i/Z_i.               */
 void composition_volume_fractions (const struct composition *, const double pure_Z[],
                                    double phi[]);
 

@@ -19,6 +19,7 @@ noinst_LIBRARIES += %D%/libsupport.a
   %D%/number.h \
   %D%/reader.c \
   %D%/reader.h \
+  %D%/sum.h \
   %D%/table.c \
   %D%/table.h \
   %D%/text.c \
