@@ -16,6 +16,7 @@ AM_TESTS_ENVIRONMENT = \
 EXTRA_DIST += %D%/run.sh %D%/tap.sh $(scripts)
 scripts = \
   %D%/layers.sh \
+  %D%/runner.sh \
   %D%/sizes.sh \
   %D%/tables.sh
 TESTS += $(scripts)
@@ -51,6 +52,18 @@ check_LIBRARIES += %D%/libtest.a
   %D%/libtest.c \
   %D%/libtest.h
 %C%_libtest_a_CPPFLAGS = $(AM_CPPFLAGS) $(CUNIT_CFLAGS)
-check_PROGRAMS += $(suites)
+check_PROGRAMS += %D%/runner $(suites)
+%C%_runner_SOURCES = %D%/runner.c
+%C%_runner_LDADD = %D%/libtest.a $(CUNIT_LIBS)
 TESTS += $(suites)
 endif
+
+# Speed and memory: make bench.
+EXTRA_PROGRAMS = %D%/bench/measure
+EXTRA_DIST += %D%/bench/bench.sh
+%C%_bench_measure_SOURCES = %D%/bench/measure.c
+CLEANFILES += %D%/bench/measure$(EXEEXT)
+
+.PHONY: bench
+bench: gaswright$(EXEEXT) %D%/bench/measure$(EXEEXT)
+	$(AM_V_at)GASWRIGHT=./gaswright$(EXEEXT) $(SHELL) $(srcdir)/%D%/bench/bench.sh
