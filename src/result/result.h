@@ -42,6 +42,7 @@ struct card {
   const char *const *headings;    /* of the columns, without the name column */
   struct card_row *rows, **last_row;
   struct card_line *lines, **last_line;
+  struct card *next;
 };
 
 /* A page of help: the form, one sentence, a line that runs; then names of other topics.  */
