@@ -1,5 +1,15 @@
 noinst_LIBRARIES += %D%/libreport.a
 
 %C%_libreport_a_SOURCES = \
+  %D%/card.c \
+  %D%/csv.c \
+  %D%/error.c \
+  %D%/figure.c \
+  %D%/help.c \
+  %D%/json.c \
+  %D%/remark.c \
   %D%/report.c \
-  %D%/report.h
+  %D%/report.h \
+  %D%/report_private.h \
+  %D%/style.c \
+  %D%/text.c

@@ -1,0 +1,161 @@
+/* A card as text: the tab, headings, rows with dotted leaders, lines below.
+
+          _/ raw \____________________________________ gas, dry, 5 parts
+                          mol%        mass%      stated as
+          CH4 ......   58.2000      34.0117      58.2
+
+   Figures of a column are aligned at the decimal sign and the heading stands at it; a column
+   without any figure is text, aligned at the left as is its heading.                            */
+#include "config.h"
+#include "report/report_private.h"
+
+#include <string.h>
+
+#include "result/result.h"
+#include "support/memory.h"
+#include "support/text.h"
+
+enum { GAP = 3 };
+
+/* A column: room before and behind the decimal sign; of text: none before.  */
+struct column { size_t before, behind; bool is_text; };
+
+static const char *
+cell_write (struct text *scratch, const struct report_style *style, const struct cell *cell)
+{
+  text_empty (scratch);
+  if (cell->text != NULL)
+    shown_add (scratch, style, cell->text);
+  else if (cell->is_number)
+    figure_write (scratch, style, cell->value);
+  return scratch->length > 0 ? scratch->bytes : "";
+}
+
+/* Characters of a cell before the decimal sign of its column.  Text among figures is aligned like
+   one if it opens with a figure, else it stands at the decimal sign's place.                    */
+static size_t
+cell_before (const struct column *column, const struct cell *cell, const char *shown)
+{
+  if (column->is_text)
+    return 0;
+  if (cell->text == NULL)
+    return figure_whole (shown);
+  return strspn (shown, "+-0123456789_");
+}
+
+static void
+column_measure (struct column *column, struct text *scratch, const struct report_style *style,
+                const struct card *card, size_t i)
+{
+  column->is_text = true;
+  for (const struct card_row *r = card->rows; r != NULL; r = r->next)
+    if (r->cells[i].text == NULL && r->cells[i].is_number)
+      column->is_text = false;
+  column->behind = shown_width (style, card->headings != NULL ? card->headings[i] : NULL);
+  for (const struct card_row *r = card->rows; r != NULL; r = r->next) {
+    const char *shown = cell_write (scratch, style, &r->cells[i]);
+    const size_t before = cell_before (column, &r->cells[i], shown);
+    const size_t behind = utf8_characters (shown, strlen (shown)) - before;
+    if (before > column->before)
+      column->before = before;
+    if (behind > column->behind)
+      column->behind = behind;
+  }
+}
+
+static bool
+has_headings (const struct card *card)
+{
+  for (size_t i = 0; card->headings != NULL && i < card->columns; i++)
+    if (card->headings[i] != NULL && *card->headings[i] != '\0')
+      return true;
+  return false;
+}
+
+static void
+headings_add (struct text *out, const struct report_style *style, const struct card *card,
+              const struct column columns[], size_t name_width)
+{
+  size_t blanks = MARGIN + name_width;
+  for (size_t i = 0; i < card->columns; i++) {
+    const size_t used = shown_width (style, card->headings[i]);
+    blanks += GAP + columns[i].before;
+    if (used > 0) {
+      text_add_repeated (out, ' ', blanks);
+      shown_add (out, style, card->headings[i]);
+      blanks = 0;
+    }
+    blanks += columns[i].behind - used;
+  }
+  text_add_char (out, '\n');
+}
+
+/* A row, with the weight of a figure for its numbers; no blanks at the end.  */
+static void
+row_add (struct text *out, const struct report_style *style, const struct card *card,
+         const struct card_row *row, const struct column columns[])
+{
+  struct text scratch;
+  text_init (&scratch);
+  size_t blanks = 0;
+  for (size_t i = 0; i < card->columns; i++) {
+    const char *shown = cell_write (&scratch, style, &row->cells[i]);
+    const size_t before = cell_before (&columns[i], &row->cells[i], shown);
+    const size_t width = utf8_characters (shown, strlen (shown));
+    blanks += GAP + columns[i].before - before;
+    if (width > 0) {
+      text_add_repeated (out, ' ', blanks);
+      text_add (out, shown);
+      blanks = 0;
+    }
+    blanks += columns[i].behind + before - width;
+  }
+  text_add_char (out, '\n');
+  text_clear (&scratch);
+}
+
+static size_t
+name_column (const struct report_style *style, const struct card *card)
+{
+  size_t width = NAME_WIDTH;
+  for (const struct card_row *r = card->rows; r != NULL; r = r->next) {
+    const size_t needed = shown_width (style, r->name) + NAME_DOTS;
+    if (needed > width)
+      width = needed;
+  }
+  return width;
+}
+
+static void
+rows_add (struct text *out, const struct report_style *style, const struct card *card,
+          struct column columns[])
+{
+  struct text scratch;
+  text_init (&scratch);
+  for (size_t i = 0; i < card->columns; i++)
+    column_measure (&columns[i], &scratch, style, card, i);
+  text_clear (&scratch);
+  const size_t width = name_column (style, card);
+  if (has_headings (card))
+    headings_add (out, style, card, columns, width);
+  for (const struct card_row *r = card->rows; r != NULL; r = r->next) {
+    text_add_repeated (out, ' ', MARGIN);
+    leader_add (out, style, r->name, width);
+    row_add (out, style, card, r, columns);
+  }
+}
+
+void
+report_card (struct text *out, const struct report_style *style, const struct card *card)
+{
+  struct column *columns = memory_get (card->columns + 1, sizeof *columns);
+  tab_add (out, style, card->title, card->kind);
+  if (card->rows != NULL)
+    rows_add (out, style, card, columns);
+  for (const struct card_line *l = card->lines; l != NULL; l = l->next) {
+    text_add_repeated (out, ' ', MARGIN);
+    shown_add (out, style, l->text);
+    text_add_char (out, '\n');
+  }
+  memory_release (columns);
+}

@@ -1,0 +1,225 @@
+/* Results as CSV (RFC 4180, UTF-8, lines end in LF), one row a figure:
+
+     statement,what,label,value,unit,uncertainty,moisture,basis,taken,notes,cautions
+
+   The heading row comes once.  Remarks stand on every row of their statement, several in one
+   field parted by " | ", so that a row can be cut out.  Numbers carry every digit; a figure nobody
+   could compute is empty.
+
+   What has no unit column of its own keeps this form:
+   - a card: one row a cell; `what` is "ROW of TITLE", `label` the heading, `value` the number or
+     the text; a text without a heading behind a cell is its unit; the lines under it are rows whose `label` is "line" and whose `basis` is the text;
+   - help: `what` is the topic, `label` say, get or try, `value` the text;
+   - a statement that only had something to note: one row without a value.                      */
+#include "config.h"
+#include "report/report_private.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "result/result.h"
+#include "support/number.h"
+#include "support/text.h"
+
+/* What all rows of a statement share: its text in front and the remarks at the end.  */
+struct frame { struct text *out; struct text front, back; };
+
+/* In quotes; bytes that are no UTF-8 become the replacement character.  */
+static void
+quoted_field (struct text *out, const char *string, size_t n)
+{
+  text_add_char (out, '"');
+  for (size_t i = 0; i < n;) {
+    unsigned code;
+    const size_t length = utf8_decode (string + i, n - i, &code);
+    if (string[i] == '"')
+      text_add_char (out, '"');
+    if (length > 0)
+      text_add_bytes (out, string + i, length);
+    else
+      text_add (out, "\uFFFD");
+    i += length > 0 ? length : 1;
+  }
+  text_add_char (out, '"');
+}
+
+static void
+field (struct text *out, const char *string)
+{
+  const size_t n = string != NULL ? strlen (string) : 0;
+  if (n == 0)
+    return;
+  if (strcspn (string, ",\"\r\n") == n && string[0] != ' ' && string[n - 1] != ' '
+      && utf8_first_bad (string, n) == n)
+    text_add_bytes (out, string, n);
+  else
+    quoted_field (out, string, n);
+}
+
+static void
+next_field (struct text *out, const char *string)
+{
+  text_add_char (out, ',');
+  field (out, string);
+}
+
+static void
+next_number (struct text *out, double value)
+{
+  text_add_char (out, ',');
+  if (isfinite (value))
+    number_write_exact (out, value);
+}
+
+static void
+next_remarks (struct text *out, const struct remark *remarks)
+{
+  struct text joined;
+  text_init (&joined);
+  for (const struct remark *r = remarks; r != NULL; r = r->next) {
+    if (joined.length > 0)
+      text_add (&joined, " | ");
+    remark_sentence (&joined, r);
+    text_add_char (&joined, ' ');
+    if (!remark_bracket (&joined, r))
+      joined.bytes[--joined.length] = '\0';
+  }
+  next_field (out, joined.bytes);
+  text_clear (&joined);
+}
+
+static void
+row_open (struct frame *frame, const char *what, const char *label)
+{
+  text_add_bytes (frame->out, frame->front.bytes, frame->front.length);
+  next_field (frame->out, what);
+  next_field (frame->out, label);
+}
+
+static void
+row_close (struct frame *frame)
+{
+  text_add_bytes (frame->out, frame->back.bytes, frame->back.length);
+}
+
+static void
+answer_add (struct frame *frame, const struct answer *answer)
+{
+  struct text *out = frame->out;
+  row_open (frame, answer->what, answer->label);
+  next_number (out, answer->value);
+  next_field (out, answer->unit);
+  next_number (out, answer->uncertainty);
+  next_field (out, answer->moisture);
+  next_field (out, answer->basis);
+  row_close (frame);
+}
+
+/* A row that holds a text where figures hold their value, or where they hold their basis.  */
+static void
+words_add (struct frame *frame, const char *what, const char *label, const char *value,
+           const char *basis)
+{
+  row_open (frame, what, label);
+  next_field (frame->out, value);
+  text_add (frame->out, ",,,");
+  next_field (frame->out, basis);
+  row_close (frame);
+}
+
+static const char *
+heading_of (const struct card *card, size_t i)
+{
+  return card->headings != NULL && card->headings[i] != NULL ? card->headings[i] : "";
+}
+
+/* Is cell I of ROW the unit of the one before it?  */
+static bool
+is_unit (const struct card *card, const struct card_row *row, size_t i)
+{
+  return i > 0 && i < card->columns && row->cells[i].text != NULL && *heading_of (card, i) == '\0'
+         && (row->cells[i - 1].text != NULL || row->cells[i - 1].is_number);
+}
+
+static void
+cell_add (struct frame *frame, const char *what, const char *heading, const struct cell *cell,
+          const char *unit)
+{
+  row_open (frame, what, heading);
+  if (cell->text != NULL)
+    next_field (frame->out, cell->text);
+  else
+    next_number (frame->out, cell->value);
+  next_field (frame->out, unit);
+  text_add (frame->out, ",,,");
+  row_close (frame);
+}
+
+static void
+card_row_add (struct frame *frame, const struct card *card, const struct card_row *row)
+{
+  struct text what;
+  text_init (&what);
+  text_add (&what, row->name != NULL ? row->name : "");
+  text_add (&what, " of ");
+  text_add (&what, card->title != NULL ? card->title : "");
+  for (size_t i = 0; i < card->columns; i++) {
+    const struct cell *cell = &row->cells[i];
+    if (is_unit (card, row, i) || (cell->text == NULL && !cell->is_number))
+      continue;
+    cell_add (frame, what.bytes, heading_of (card, i), cell,
+              is_unit (card, row, i + 1) ? row->cells[i + 1].text : NULL);
+  }
+  if (card->columns == 0)
+    words_add (frame, what.bytes, NULL, NULL, NULL);
+  text_clear (&what);
+}
+
+static void
+help_page_add (struct frame *frame, const struct help_page *page)
+{
+  for (const struct help_entry *e = page->entries; e != NULL; e = e->next) {
+    const char *const words[][2] = { { "say", e->say }, { "get", e->get }, { "try", e->example } };
+    for (size_t i = 0; i < 3; i++)
+      if (words[i][1] != NULL && *words[i][1] != '\0')
+        words_add (frame, page->title, words[i][0], words[i][1], NULL);
+  }
+}
+
+static void
+rows_add (struct frame *frame, const struct result *result)
+{
+  for (const struct answer *a = result->answers; a != NULL; a = a->next)
+    answer_add (frame, a);
+  for (const struct card *c = result->cards; c != NULL; c = c->next) {
+    for (const struct card_row *r = c->rows; r != NULL; r = r->next)
+      card_row_add (frame, c, r);
+    for (const struct card_line *l = c->lines; l != NULL; l = l->next)
+      words_add (frame, c->title, "line", NULL, l->text);
+  }
+  if (result->help != NULL)
+    help_page_add (frame, result->help);
+  if (result->answers == NULL && result->cards == NULL && result->help == NULL)
+    words_add (frame, NULL, NULL, NULL, NULL);
+}
+
+void
+report_csv (struct text *out, const struct result *result, bool first)
+{
+  if (first)
+    text_add (out, "statement,what,label,value,unit,uncertainty,moisture,basis,"
+                   "taken,notes,cautions\n");
+  if (result_is_empty (result))
+    return;
+  struct frame frame = { .out = out };
+  text_init (&frame.front);
+  text_init (&frame.back);
+  field (&frame.front, result->statement);
+  next_remarks (&frame.back, result->taken);
+  next_remarks (&frame.back, result->notes);
+  next_remarks (&frame.back, result->cautions);
+  text_add_char (&frame.back, '\n');
+  rows_add (&frame, result);
+  text_clear (&frame.front);
+  text_clear (&frame.back);
+}

@@ -1,0 +1,271 @@
+/* Results and faults as JSON (RFC 8259), one object a line, UTF-8, numbers in the shortest form
+   that reads back equal.
+
+   A result: {"statement","answers":[{"what","label"?,"value","unit","basis","uncertainty"?}],
+     "card"?,"further_cards"?,"help"?,"taken":[...],"notes":[...],"cautions":[...]}
+   "basis" begins with wet or dry where that is known and is "" where there is none to state.  A
+   figure nobody could compute is null.  The lists hold the sentences of the text form without the
+   word that opens the line; what was taken ends with its bracket.
+   A card: {"title","kind","columns":[heading],"rows":[{"name","values":[number, text or null]}],
+     "lines":[text]}; "further_cards" holds those behind the first.
+   Help: {"title","entries":[{"say","get","try"}]}.
+   A fault: {"statement","error":{"kind","message","file"?,"line","column","hint"}}; "hint" is a
+   corrected line where there is one, else what was expected, else "".  A place not known is 0.
+   Members may be added, never renamed.                                                          */
+#include "config.h"
+#include "report/report_private.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "result/result.h"
+#include "support/fault.h"
+#include "support/number.h"
+#include "support/text.h"
+
+static bool
+is_safe (unsigned char c)
+{
+  return c >= 0x20 && c < 0x80 && c != '"' && c != '\\';
+}
+
+static size_t
+safe_run (const char *bytes, size_t n)
+{
+  size_t run = 0;
+  while (run < n && is_safe ((unsigned char) bytes[run]))
+    run++;
+  return run;
+}
+
+/* One character that is not safe; returns the bytes it used up.  Bytes that are no UTF-8 become
+   the replacement character.                                                                    */
+static size_t
+escape (struct text *out, const char *bytes, size_t n)
+{
+  const unsigned char c = (unsigned char) *bytes;
+  unsigned code;
+  const size_t length = utf8_decode (bytes, n, &code);
+  if (c == '"' || c == '\\') {
+    text_add_char (out, '\\');
+    text_add_char (out, (char) c);
+  } else if (c == '\n')
+    text_add (out, "\\n");
+  else if (c == '\t')
+    text_add (out, "\\t");
+  else if (c < 0x20)
+    text_add_format (out, "\\u%04x", (unsigned) c);
+  else if (length > 0)
+    text_add_bytes (out, bytes, length);
+  else
+    text_add (out, "\uFFFD");
+  return length > 0 ? length : 1;
+}
+
+static void
+escaped (struct text *out, const char *bytes, size_t n)
+{
+  for (size_t at = 0; at < n;) {
+    const size_t run = safe_run (bytes + at, n - at);
+    text_add_bytes (out, bytes + at, run);
+    at += run;
+    if (at < n)
+      at += escape (out, bytes + at, n - at);
+  }
+}
+
+void
+json_string (struct text *out, const char *string)
+{
+  text_add_char (out, '"');
+  escaped (out, string, strlen (string));
+  text_add_char (out, '"');
+}
+
+/* Makes a string of what was added raw behind its opening quote, from START on.  */
+static void
+close_string (struct text *out, size_t start)
+{
+  const size_t n = out->length - start;
+  const size_t run = safe_run (out->bytes + start, n);
+  if (run < n) {
+    struct text rest;
+    text_init (&rest);
+    text_add_bytes (&rest, out->bytes + start + run, n - run);
+    out->length = start + run;
+    escaped (out, rest.bytes, rest.length);
+    text_clear (&rest);
+  }
+  text_add_char (out, '"');
+}
+
+/* KEY is all that stands before the value, from comma to colon.  */
+static void
+member (struct text *out, const char *key, const char *value)
+{
+  text_add (out, key);
+  json_string (out, value != NULL ? value : "");
+}
+
+static void
+number (struct text *out, double value)
+{
+  if (isfinite (value))
+    number_write_exact (out, value);
+  else
+    text_add (out, "null");
+}
+
+static void
+answer_add (struct text *out, const struct answer *answer)
+{
+  member (out, "{\"what\":", answer->what);
+  if (answer->label != NULL)
+    member (out, ",\"label\":", answer->label);
+  text_add (out, ",\"value\":");
+  number (out, answer->value);
+  member (out, ",\"unit\":", answer->unit);
+  text_add (out, ",\"basis\":\"");
+  const bool moist = answer->moisture != NULL && *answer->moisture != '\0';
+  const bool based = answer->basis != NULL && *answer->basis != '\0';
+  if (moist)
+    escaped (out, answer->moisture, strlen (answer->moisture));
+  if (moist && based)
+    text_add (out, ", ");
+  if (based)
+    escaped (out, answer->basis, strlen (answer->basis));
+  text_add_char (out, '"');
+  if (isfinite (answer->uncertainty)) {
+    text_add (out, ",\"uncertainty\":");
+    number_write_exact (out, answer->uncertainty);
+  }
+  text_add_char (out, '}');
+}
+
+static void
+remarks_add (struct text *out, const char *key, const struct remark *remarks)
+{
+  text_add (out, key);
+  text_add_char (out, '[');
+  for (const struct remark *r = remarks; r != NULL; r = r->next) {
+    text_add_char (out, '"');
+    const size_t start = out->length;
+    remark_sentence (out, r);
+    const size_t end = out->length;
+    text_add_char (out, ' ');
+    if (!remark_bracket (out, r))
+      out->length = end;
+    close_string (out, start);
+    if (r->next != NULL)
+      text_add_char (out, ',');
+  }
+  text_add_char (out, ']');
+}
+
+static void
+cell_add (struct text *out, const struct cell *cell)
+{
+  if (cell->text != NULL)
+    json_string (out, cell->text);
+  else
+    number (out, cell->is_number ? cell->value : (double) NAN);
+}
+
+static void
+card_add (struct text *out, const struct card *card)
+{
+  member (out, "{\"title\":", card->title);
+  member (out, ",\"kind\":", card->kind);
+  text_add (out, ",\"columns\":[");
+  for (size_t i = 0; i < card->columns; i++)
+    member (out, i > 0 ? "," : "", card->headings != NULL ? card->headings[i] : NULL);
+  text_add (out, "],\"rows\":[");
+  for (const struct card_row *r = card->rows; r != NULL; r = r->next) {
+    member (out, "{\"name\":", r->name);
+    text_add (out, ",\"values\":[");
+    for (size_t i = 0; i < card->columns; i++) {
+      text_add (out, i > 0 ? "," : "");
+      cell_add (out, &r->cells[i]);
+    }
+    text_add (out, r->next != NULL ? "]}," : "]}");
+  }
+  text_add (out, "],\"lines\":[");
+  for (const struct card_line *l = card->lines; l != NULL; l = l->next) {
+    json_string (out, l->text);
+    text_add (out, l->next != NULL ? "," : "");
+  }
+  text_add (out, "]}");
+}
+
+static void
+cards_add (struct text *out, const struct card *cards)
+{
+  text_add (out, ",\"card\":");
+  card_add (out, cards);
+  if (cards->next == NULL)
+    return;
+  text_add (out, ",\"further_cards\":[");
+  for (const struct card *c = cards->next; c != NULL; c = c->next) {
+    card_add (out, c);
+    text_add (out, c->next != NULL ? "," : "]");
+  }
+}
+
+static void
+help_page_add (struct text *out, const struct help_page *page)
+{
+  member (out, ",\"help\":{\"title\":", page->title);
+  text_add (out, ",\"entries\":[");
+  for (const struct help_entry *e = page->entries; e != NULL; e = e->next) {
+    member (out, "{\"say\":", e->say);
+    member (out, ",\"get\":", e->get);
+    member (out, ",\"try\":", e->example);
+    text_add (out, e->next != NULL ? "}," : "}");
+  }
+  text_add (out, "]}");
+}
+
+void
+report_json (struct text *out, const struct result *result)
+{
+  if (result_is_empty (result))
+    return;
+  member (out, "{\"statement\":", result->statement);
+  text_add (out, ",\"answers\":[");
+  for (const struct answer *a = result->answers; a != NULL; a = a->next) {
+    answer_add (out, a);
+    if (a->next != NULL)
+      text_add_char (out, ',');
+  }
+  text_add_char (out, ']');
+  if (result->cards != NULL)
+    cards_add (out, result->cards);
+  if (result->help != NULL)
+    help_page_add (out, result->help);
+  remarks_add (out, ",\"taken\":", result->taken);
+  remarks_add (out, ",\"notes\":", result->notes);
+  remarks_add (out, ",\"cautions\":", result->cautions);
+  text_add (out, "}\n");
+}
+
+void
+report_fault_json (struct text *out, const struct fault *fault,
+                   const struct report_origin *origin)
+{
+  struct fault_words words;
+  fault_words_init (&words, fault, origin->line != NULL ? origin->line : origin->statement);
+  const bool line = words.line.length > 0;
+  if (line && words.phrase.length > 0) {
+    text_add (&words.sentence, "; ");
+    text_add (&words.sentence, words.phrase.bytes);
+  }
+  member (out, "{\"statement\":", origin->statement);
+  member (out, ",\"error\":{\"kind\":", message_name (fault->kind));
+  member (out, ",\"message\":", words.sentence.bytes);
+  if (origin->file != NULL)
+    member (out, ",\"file\":", origin->file);
+  text_add_format (out, ",\"line\":%d,\"column\":%d", fault->at.line, fault->at.first);
+  member (out, ",\"hint\":", line ? words.line.bytes : words.phrase.bytes);
+  text_add (out, "}}\n");
+  fault_words_clear (&words);
+}

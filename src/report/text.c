@@ -1,0 +1,272 @@
+/* A result as text: figures aligned at the decimal sign, the basis on every row, what was taken
+   and noted and warned of under them.
+
+   Looks like this, with the six columns of the margin in front:
+
+          3020.77  Nm3/h   dry    0 degC, 101.325 kPa, ideal-gas volume
+          3990.51  kg/h    wet    water 3.44969 mol%
+      ?   taken: Nm3 at 0 degC, 101.325 kPa                  (at 15 degC: +5.5 %)                */
+#include "config.h"
+#include "report/report_private.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "result/result.h"
+#include "support/text.h"
+
+enum { GAP_NAME = 3, GAP_UNIT = 2, GAP_MOISTURE = 3, GAP_BASIS = 4 };
+
+/* Widths of the columns of one statement's rows; 0 where no row has anything there.  */
+struct columns {
+  bool named;
+  size_t name, whole, fraction, unit, spread, moisture;
+};
+
+static size_t
+larger (size_t a, size_t b)
+{
+  return a > b ? a : b;
+}
+
+/* What stands in front of a row: what the user called it, else what it is.  */
+static const char *
+row_name (const struct answer *answer)
+{
+  return answer->label != NULL ? answer->label : answer->what;
+}
+
+/* Rows are named where they have labels or are about different things.  */
+static bool
+rows_are_named (const struct result *result)
+{
+  const char *first = result->answers->what;
+  for (const struct answer *a = result->answers; a != NULL; a = a->next)
+    if (a->label != NULL || (a->what != first && strcmp (a->what, first) != 0))
+      return true;
+  return false;
+}
+
+static const char *
+plus_minus (const struct report_style *style)
+{
+  return style->unicode ? "\u00B1 " : "+/- ";
+}
+
+/* Writes the figures of all rows into FIGURES, each as "figure \0 spread \0", and measures.  */
+static struct columns
+measure (const struct report_style *style, const struct result *result, struct text *figures)
+{
+  struct columns wide = { .named = rows_are_named (result) };
+  for (const struct answer *a = result->answers; a != NULL; a = a->next) {
+    const size_t start = figures->length;
+    const bool uncertain = figure_is_uncertain (a->value, a->uncertainty);
+    if (uncertain)
+      figure_write_uncertain (figures, a->value, figures, a->uncertainty);
+    else {
+      figure_write (figures, style, a->value);
+      text_add_char (figures, '\0');
+    }
+    text_add_char (figures, '\0');
+    const char *figure = figures->bytes + start;
+    const size_t length = strlen (figure), whole = figure_whole (figure);
+    wide.whole = larger (wide.whole, whole);
+    wide.fraction = larger (wide.fraction, length - whole);
+    wide.unit = larger (wide.unit, shown_width (style, a->unit));
+    if (uncertain)
+      wide.spread = larger (wide.spread, strlen (figure + length + 1)
+                                         + (style->unicode ? 2 : 4));
+    wide.moisture = larger (wide.moisture, shown_width (style, a->moisture));
+    if (wide.named)
+      wide.name = larger (wide.name, shown_width (style, row_name (a)) + NAME_DOTS);
+  }
+  wide.name = wide.named ? larger (wide.name, NAME_WIDTH) : 0;
+  return wide;
+}
+
+/* A row is put together from pieces; blanks are held back until a piece follows, so that none
+   are left at its end.                                                                          */
+struct row { struct text *out; const struct report_style *style; size_t blanks; };
+
+static void
+row_blanks (struct row *row)
+{
+  text_add_repeated (row->out, ' ', row->blanks);
+  row->blanks = 0;
+}
+
+/* STRING in a column of WIDTH.  */
+static void
+row_add (struct row *row, const char *string, size_t width)
+{
+  const size_t used = shown_width (row->style, string);
+  if (used > 0) {
+    row_blanks (row);
+    shown_add (row->out, row->style, string);
+  }
+  row->blanks += width > used ? width - used : 0;
+}
+
+/* The figure and, behind its unit, the spread; FIGURE points to "figure \0 spread \0".  */
+static void
+row_figure (struct row *row, const struct answer *answer, const char *figure,
+            const struct columns *wide)
+{
+  const size_t length = strlen (figure), whole = figure_whole (figure);
+  const char *spread = figure + length + 1;
+  row->blanks += wide->whole - whole;
+  row_blanks (row);
+  weight_open (row->out, row->style, WEIGHT_BOLD);
+  text_add_bytes (row->out, figure, length);
+  weight_close (row->out, row->style);
+  row->blanks = wide->fraction - (length - whole);
+  if (wide->unit > 0) {
+    row->blanks += GAP_UNIT;
+    row_add (row, answer->unit, wide->unit);
+  }
+  if (wide->spread > 0) {
+    row->blanks += 1;
+    size_t used = 0;
+    if (*spread != '\0') {
+      row_blanks (row);
+      text_add (row->out, plus_minus (row->style));
+      text_add (row->out, spread);
+      used = strlen (spread) + (row->style->unicode ? 2 : 4);
+    }
+    row->blanks += wide->spread - used;
+  }
+}
+
+static void
+row_basis (struct row *row, const struct answer *answer, const struct columns *wide)
+{
+  const bool based = answer->basis != NULL && *answer->basis != '\0';
+  const bool moist = answer->moisture != NULL && *answer->moisture != '\0';
+  if (!based && !moist)
+    return;
+  row->blanks += GAP_MOISTURE;
+  if (!moist && wide->moisture > 0)
+    row->blanks += wide->moisture + GAP_BASIS;
+  row_blanks (row);
+  weight_open (row->out, row->style, WEIGHT_DIM);
+  if (moist) {
+    row_add (row, answer->moisture, wide->moisture);
+    row->blanks += GAP_BASIS;
+  }
+  if (based)
+    row_add (row, answer->basis, 0);
+  weight_close (row->out, row->style);
+}
+
+static void
+answers_add (struct text *out, const struct report_style *style, const struct result *result)
+{
+  struct text figures;
+  text_init (&figures);
+  const struct columns wide = measure (style, result, &figures);
+  const char *figure = figures.bytes;
+  for (const struct answer *a = result->answers; a != NULL; a = a->next) {
+    struct row row = { .out = out, .style = style };
+    text_add_repeated (out, ' ', MARGIN);
+    if (wide.named) {
+      leader_add (out, style, row_name (a), wide.name);
+      row.blanks = GAP_NAME;
+    }
+    row_figure (&row, a, figure, &wide);
+    row_basis (&row, a, &wide);
+    text_add_char (out, '\n');
+    figure += strlen (figure) + 1;
+    figure += strlen (figure) + 1;
+  }
+  text_clear (&figures);
+}
+
+/* The mark in the margin, always with its word.  */
+static void
+mark_add (struct text *out, const struct report_style *style, char mark, const char *word)
+{
+  text_add_repeated (out, ' ', MARGIN_MARK);
+  if (mark == '!')
+    weight_open (out, style, WEIGHT_REVERSE);
+  text_add_char (out, mark);
+  if (mark == '!')
+    weight_close (out, style);
+  text_add_repeated (out, ' ', MARGIN - MARGIN_MARK - 1);
+  text_add (out, word);
+}
+
+static void
+remarks_add (struct text *out, const struct report_style *style, const struct remark *remarks,
+             char mark, const char *word)
+{
+  for (const struct remark *r = remarks; r != NULL; r = r->next) {
+    mark_add (out, style, mark, word);
+    const size_t start = out->length;
+    remark_sentence (out, r);
+    shown_clean (out, style, start);
+    text_add_char (out, '\n');
+  }
+}
+
+/* The lines of what was taken are written twice where a bracket stands behind one: once to learn
+   how long they are, once with the brackets in their column.                                    */
+static size_t
+bracket_column (const struct report_style *style, const struct remark *remarks)
+{
+  size_t column = BRACKET_COLUMN;
+  struct text line;
+  text_init (&line);
+  for (const struct remark *r = remarks; r != NULL; r = r->next) {
+    text_empty (&line);
+    if (!remark_bracket (&line, r))
+      continue;
+    text_empty (&line);
+    text_add (&line, "taken: ");
+    remark_sentence (&line, r);
+    column = larger (column, shown_width (style, line.bytes) + 2);
+  }
+  text_clear (&line);
+  return column;
+}
+
+static void
+taken_add (struct text *out, const struct report_style *style, const struct remark *remarks)
+{
+  const bool alone = remarks->next == NULL;
+  const size_t column = alone ? BRACKET_COLUMN : bracket_column (style, remarks);
+  for (const struct remark *r = remarks; r != NULL; r = r->next) {
+    mark_add (out, style, '?', "");
+    const size_t start = out->length;
+    text_add (out, "taken: ");
+    remark_sentence (out, r);
+    shown_clean (out, style, start);
+    const size_t end = out->length;
+    const size_t used = utf8_characters (out->bytes + start, end - start);
+    text_add_repeated (out, ' ', used + 2 > column ? 2 : column - used);
+    const size_t bracket = out->length;
+    if (remark_bracket (out, r))
+      shown_clean (out, style, bracket);
+    else
+      out->length = end;
+    text_add_char (out, '\n');
+  }
+}
+
+void
+report_text (struct text *out, const struct report_style *style, const struct result *result)
+{
+  if (result_is_empty (result))
+    return;
+  if (style->prompt)
+    text_add_char (out, '\n');
+  if (result->answers != NULL)
+    answers_add (out, style, result);
+  for (const struct card *c = result->cards; c != NULL; c = c->next)
+    report_card (out, style, c);
+  if (result->help != NULL)
+    report_help (out, style, result->help);
+  if (result->taken != NULL)
+    taken_add (out, style, result->taken);
+  remarks_add (out, style, result->notes, '~', "note: ");
+  remarks_add (out, style, result->cautions, '!', "caution: ");
+}
