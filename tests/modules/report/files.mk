@@ -3,3 +3,11 @@
 #   suites += %D%/t_NAME
 #   %C%_t_NAME_SOURCES = %D%/t_NAME.c
 #   %C%_t_NAME_LDADD = $(with_report)
+
+suites += %D%/t_figure
+%C%_t_figure_SOURCES = %D%/t_figure.c
+%C%_t_figure_LDADD = $(with_report)
+
+suites += %D%/t_report
+%C%_t_report_SOURCES = %D%/t_report.c
+%C%_t_report_LDADD = $(with_report)

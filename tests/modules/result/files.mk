@@ -3,3 +3,7 @@
 #   suites += %D%/t_NAME
 #   %C%_t_NAME_SOURCES = %D%/t_NAME.c
 #   %C%_t_NAME_LDADD = $(with_result)
+
+suites += %D%/t_result
+%C%_t_result_SOURCES = %D%/t_result.c
+%C%_t_result_LDADD = $(with_result)
