@@ -1,9 +1,11 @@
 /* Equations of state behind one interface.
 
-   An equation is one file and a row of functions over a mixture prepared once for a composition.
-   Everything else (Z, volume, density, later enthalpy and speed of sound) is derived here, once,
-   from the residual Helmholtz energy and its derivatives by density.  SI units: T in K, p in Pa,
-   rho in mol/m3.                                                                                */
+   An equation is one file and a row of functions.  Its work comes in three steps: what depends on
+   the composition alone (a mixture, prepared once), what depends on T too (an isotherm, set once
+   for each T), and what is asked at a density.  Everything else (Z, volume, density, later
+   enthalpy and speed of sound) is derived here, once, from the residual Helmholtz energy and its
+   derivatives by density.  The memory of all three steps is the caller's; nothing is allocated
+   while solving.  SI units: T in K, p in Pa, rho in mol/m3.                                     */
 #ifndef EOS_EOS_H
 #define EOS_EOS_H
 
@@ -11,28 +13,43 @@
 #include <stddef.h>
 #include "support/check.h"
 
-struct arena; struct composition; struct fault; struct workings;
+struct arena; struct composition; struct fault;
 
 /* Residual Helmholtz energy a^r/(RT) at T and rho, and rho times its derivatives by rho:
-   a1 = rho d(a)/d(rho), a2 = rho^2 d2(a)/d(rho)2.  So Z = 1 + a1.                               */
+   a1 = rho d(a)/d(rho), a2 = rho^2 d2(a)/d(rho)2.  So Z = 1 + a1 and
+   dp/d(rho) = RT (1 + 2 a1 + a2).                                                               */
 struct residual { double a, a1, a2; };
+
+/* The densities at which an isotherm meets a pressure.  `gas` is the smallest and `dense` the
+   largest, both on rising branches; 0 where there is none.  An isotherm with a loop (a falling
+   stretch) that meets p only beyond the loop has no gas root: the fluid is a liquid.  Without a
+   loop its one root is the gas root, however dense.                                             */
+struct density_roots { double gas, dense; };
 
 struct equation {
   const char *name;                        /* "Peng-Robinson" */
   const char *source;
-  /* Does it cover every species?  *LACKING names the first it lacks.  */
+  double gas_constant;                     /* J/(mol K), the one the equation was made with */
+  /* Does it cover every species?  *LACKING is the key of the first it lacks, or null.  */
   bool (*covers) (const struct composition *, const char **lacking);
-  /* What depends on the composition alone, in the arena.  */
-  const void *(*prepare) (struct arena *, const struct composition *);
-  /* What depends on composition and T: called before `residual` and `roots` for that T, into
-     SCRATCH of `scratch_size` bytes given by the caller.                                       */
-  size_t scratch_size;
-  void (*set_temperature) (const void *mixture, double T, void *scratch);
-  struct residual (*residual) (const void *mixture, const void *scratch, double T, double rho);
-  /* Density roots at T and p, smallest first; returns how many (1 to 3).  Null: no closed form,
-     the common iteration is used.                                                              */
-  int (*roots) (const void *mixture, const void *scratch, double T, double p, double rho[3]);
+  /* Fills MIXTURE, mixture_size (count) bytes aligned for any type.  What it needs of the
+     composition is copied.                                                                     */
+  size_t (*mixture_size) (size_t count);
+  void (*prepare) (const struct composition *, void *mixture);
+  /* Fills ISOTHERM, isotherm_size bytes (at most EOS_ISOTHERM_SIZE) aligned for any type, which
+     may point into MIXTURE.                                                                    */
+  size_t isotherm_size;
+  void (*set_isotherm) (const void *mixture, double T, void *isotherm);
+  struct residual (*residual) (const void *isotherm, double rho);
+  /* A density above that of any root in the range of the equation; read only where `roots` is
+     null.                                                                                      */
+  double (*densest) (const void *isotherm);
+  /* The roots in closed form, NAN where they cannot be computed; null: none, they are found by
+     the common iteration.                                                                      */
+  struct density_roots (*roots) (const void *isotherm, double p);
 };
+
+enum { EOS_ISOTHERM_SIZE = 16384 };
 
 extern const struct equation equation_ideal, equation_peng_robinson;
 
@@ -43,21 +60,35 @@ const char *gas_model_name (enum gas_model);             /* "auto", "ideal", "Pe
 const struct equation *gas_model_equation (enum gas_model);
 
 /* The choice for a composition: for auto the best equation that covers it, else the ideal gas
-   with *LACKING naming what the better one lacks a constant of.  For a named model its equation;
-   kinds model-lacks (facts: model, species), model-absent.                                     */
+   with *LACKING the key of the first species the better one lacks a constant of (null where
+   nothing is lacking).  For a named model its equation; null with the kinds model-lacks (facts:
+   model, species), model-absent (fact: model).                                                 */
 const struct equation *equation_choose (enum gas_model, const struct composition *,
                                         const char **lacking, struct fault *) MUST_CHECK;
 
 struct eos_state {
   const struct equation *equation;
-  double Z;                                /* of the gas root */
+  double Z;                                /* of the gas root: p/(rho R T), R of the equation */
   double density;                          /* mol/m3 */
   bool may_condense;                       /* a denser root is the more stable one */
 };
 
 /* Z and density of the gas at T and p.  Kinds: range (T or p not positive or not finite),
-   state-liquid (only a liquid root), not-converged.                                            */
+   state-liquid (only a liquid root; fact: the species, or "the mixture"), not-converged,
+   not-finite (T or p so far out that the arithmetic ends).  EQUATION must cover the composition.
+
+   may_condense compares the residual Gibbs energies of the two roots at the overall composition.
+   That is exact for a pure substance.  For a mixture it only indicates: a mixture that falls
+   into parts of other compositions may have one root.                                          */
 bool eos_solve (const struct equation *, const struct composition *, double T, double p,
                 struct eos_state *, struct fault *) MUST_CHECK;
+
+/* The same for many T and p: a composition prepared once, in the arena, which must outlive it.
+   The composition is not needed afterwards.                                                    */
+struct eos_mixture;
+const struct eos_mixture *eos_prepare (struct arena *, const struct equation *,
+                                       const struct composition *) MUST_CHECK;
+bool eos_solve_prepared (const struct eos_mixture *, double T, double p, struct eos_state *,
+                         struct fault *) MUST_CHECK;
 
 #endif
