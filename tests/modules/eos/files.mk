@@ -3,3 +3,28 @@
 #   suites += %D%/t_NAME
 #   %C%_t_NAME_SOURCES = %D%/t_NAME.c
 #   %C%_t_NAME_LDADD = $(with_eos)
+
+suites += %D%/t_cubic
+%C%_t_cubic_SOURCES = \
+  %D%/fluids.c \
+  %D%/fluids.h \
+  %D%/t_cubic.c
+%C%_t_cubic_LDADD = $(with_eos)
+
+suites += %D%/t_eos
+%C%_t_eos_SOURCES = \
+  %D%/fluids.c \
+  %D%/fluids.h \
+  %D%/t_eos.c
+%C%_t_eos_LDADD = $(with_eos)
+
+suites += %D%/t_table_states
+%C%_t_table_states_SOURCES = \
+  %D%/fluids.c \
+  %D%/fluids.h \
+  %D%/t_table_states.c
+%C%_t_table_states_LDADD = $(with_eos)
+
+EXTRA_DIST += \
+  tests/numbers/peng_robinson.tsv \
+  tests/numbers/real_gas.tsv
