@@ -125,24 +125,35 @@ arena_reset (struct arena *arena)
   enter_chunk (arena, arena->first);
 }
 
-/* Puts a chunk with room for BYTES behind the current one and enters it: an empty one kept from
-   before if any is large enough, else a new one.                                               */
+/* Takes the smallest empty chunk with room for BYTES out of the list behind CHUNK; null: none.  */
+static struct chunk *
+take_kept (struct chunk *chunk, size_t bytes)
+{
+  struct chunk **best = NULL;
+  struct chunk *kept = NULL;
+
+  for (struct chunk **link = &chunk->next; *link != NULL; link = &(*link)->next)
+    if ((*link)->room >= bytes && (best == NULL || (*link)->room < (*best)->room))
+      best = link;
+  if (best != NULL) {
+    kept = *best;
+    *best = kept->next;
+  }
+  return kept;
+}
+
+/* Puts a chunk with room for BYTES behind the current one and enters it: one kept from before if
+   any is large enough, else a new one.                                                         */
 static void
 advance (struct arena *arena, size_t bytes)
 {
-  struct chunk **link = &arena->current->next;
-  struct chunk *chunk;
+  struct chunk *chunk = take_kept (arena->current, bytes);
 
   settle_chunk (arena);
   arena->used_before += arena->current->used;
-  while (*link != NULL && (*link)->room < bytes)
-    link = &(*link)->next;
-  chunk = *link;
-  if (chunk != NULL)
-    *link = chunk->next;
-  else if (bytes > arena->step / 2)
+  if (chunk == NULL && bytes > arena->step / 2)
     chunk = chunk_create (bytes);
-  else {
+  else if (chunk == NULL) {
     chunk = chunk_create (arena->step);
     if (arena->step < LARGEST_STEP)
       arena->step *= 2;
