@@ -81,6 +81,8 @@ reader_goes_on (const char *text, size_t n)
   bool open = false;
   size_t at;
 
+  if (n == 0)
+    return false;
   for (size_t start = 0; ;) {
     const char *end = n > start ? memchr (text + start, '\n', n - start) : NULL;
     size_t length = end != NULL ? (size_t) (end - (text + start)) : n - start;
@@ -156,12 +158,12 @@ fetch_from_string (void *source, bool continues, struct text *line)
 {
   struct reader_string *string = source;
   size_t left = string->length - string->next;
-  const char *start = string->bytes + string->next;
-  const char *end;
+  const char *start, *end;
 
   (void) continues;
   if (left == 0)
     return false;
+  start = string->bytes + string->next;
   end = memchr (start, '\n', left);
   if (end == NULL) {
     text_add_bytes (line, start, left);
