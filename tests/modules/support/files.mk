@@ -3,3 +3,35 @@
 #   suites += %D%/t_NAME
 #   %C%_t_NAME_SOURCES = %D%/t_NAME.c
 #   %C%_t_NAME_LDADD = $(with_support)
+
+suites += %D%/t_arena
+%C%_t_arena_SOURCES = %D%/t_arena.c
+%C%_t_arena_LDADD = $(with_support)
+
+suites += %D%/t_built_in
+%C%_t_built_in_SOURCES = %D%/t_built_in.c
+%C%_t_built_in_LDADD = $(with_support)
+
+suites += %D%/t_fault
+%C%_t_fault_SOURCES = %D%/t_fault.c
+%C%_t_fault_LDADD = $(with_support)
+
+suites += %D%/t_map
+%C%_t_map_SOURCES = %D%/t_map.c
+%C%_t_map_LDADD = $(with_support)
+
+suites += %D%/t_number
+%C%_t_number_SOURCES = %D%/t_number.c
+%C%_t_number_LDADD = $(with_support)
+
+suites += %D%/t_reader
+%C%_t_reader_SOURCES = %D%/t_reader.c
+%C%_t_reader_LDADD = $(with_support)
+
+suites += %D%/t_table
+%C%_t_table_SOURCES = %D%/t_table.c
+%C%_t_table_LDADD = $(with_support)
+
+suites += %D%/t_text
+%C%_t_text_SOURCES = %D%/t_text.c
+%C%_t_text_LDADD = $(with_support)
