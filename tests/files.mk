@@ -21,6 +21,9 @@ scripts = \
   %D%/tables.sh
 TESTS += $(scripts)
 
+# Rows of outside figures, read by the suites.
+EXTRA_DIST += %D%/numbers
+
 # Suites in C, one program each (tests/modules/LAYER/t_NAME), linked with the runner, the layer they
 # test and the layers beneath it: a call upward does not link.
 suites =

@@ -88,6 +88,7 @@ tell "$(for file in tests/modules/*/t_*.c; do
 done)" "every suite stands in its files.mk"
 tell "$(for file in tests/*.sh tests/*/*.sh; do
   case $file in tests/run.sh | tests/tap.sh | tests/bench/* | *\*) continue ;; esac
-  grep -qE "%D%/${file#tests/}( |\$)" tests/files.mk || echo "$file"
-done)" "every test in shell stands in tests/files.mk"
+  grep -qE "%D%/(${file#tests/}|${file##*/})( |\$)" tests/files.mk "${file%/*}/files.mk" \
+    2> /dev/null || echo "$file"
+done)" "every test in shell stands in a files.mk"
 finish
