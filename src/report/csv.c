@@ -8,7 +8,8 @@
 
    What has no unit column of its own keeps this form:
    - a card: one row a cell; `what` is "ROW of TITLE", `label` the heading, `value` the number or
-     the text; a text without a heading behind a cell is its unit; the lines under it are rows whose `label` is "line" and whose `basis` is the text;
+     the text; a text without a heading behind a cell is its unit; the lines under it are rows
+     whose `label` is "line" and whose `basis` is the text;
    - help: `what` is the topic, `label` say, get or try, `value` the text;
    - a statement that only had something to note: one row without a value.                      */
 #include "config.h"

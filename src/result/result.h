@@ -33,7 +33,7 @@ struct remark {
 };
 
 /* A card: one thing with all its figures.  */
-struct cell { const char *text; double value; bool is_number; };     /* text wins; both empty: blank */
+struct cell { const char *text; double value; bool is_number; };   /* text wins; neither: blank */
 struct card_row { const char *name; const struct cell *cells; struct card_row *next; };
 struct card_line { const char *text; struct card_line *next; };
 struct card {
@@ -55,7 +55,7 @@ struct result {
   struct answer *answers, **last_answer;
   struct remark *taken, *notes, *cautions;
   struct remark **last_taken, **last_note, **last_caution;
-  struct card *cards;             /* usually none or one */
+  struct card *cards;             /* usually none or one; result_card appends */
   struct help_page *help;
   bool quit;
 };

@@ -85,7 +85,8 @@ shown_reads_back (void)
 {
   uint64_t seed = 20241;
   for (int i = 0; i < 4000; i++) {
-    const double value = (random_part (&seed) - 0.5) * pow (10.0, 24.0 * random_part (&seed) - 12.0);
+    const double sign = random_part (&seed) < 0.5 ? -1.0 : 1.0;
+    const double value = sign * pow (10.0, 24.0 * random_part (&seed) - 12.0);
     const double uncertainty = fabs (value) * pow (10.0, 10.0 * random_part (&seed) - 8.0);
     struct text shown, spread;
     text_init (&shown);
