@@ -2,7 +2,7 @@ bin_PROGRAMS += gaswright
 noinst_LIBRARIES += %D%/libshell.a %D%/libterminal.a
 
 gaswright_SOURCES = %D%/main.c
-gaswright_LDADD = %D%/libshell.a %D%/libterminal.a $(upto_report) $(READLINE_LIBS) $(GSL_LIBS)
+gaswright_LDADD = %D%/libterminal.a $(upto_shell) $(READLINE_LIBS) $(GSL_LIBS)
 
 %C%_libshell_a_SOURCES =
 
