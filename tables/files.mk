@@ -10,7 +10,8 @@ tables = \
   %D%/reference_names.tsv \
   %D%/references.tsv \
   %D%/sources.tsv \
-  %D%/species.tsv
+  %D%/species.tsv \
+  %D%/units.tsv
 
 tablesdir = $(pkgdatadir)/tables
 dist_tables_DATA = $(tables)

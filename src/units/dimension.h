@@ -3,6 +3,7 @@
 #define UNITS_DIMENSION_H
 
 #include <stdbool.h>
+#include "support/check.h"
 
 struct dimension { signed char length, mass, time, temperature, amount; };
 
@@ -13,6 +14,9 @@ struct dimension dimension_power (struct dimension, int);
 bool dimension_is_none (struct dimension);
 /* "mass per time", "pressure", ... in the trade's words; null where there is no word for it.  */
 const char *dimension_name (struct dimension);
+/* The dimension of a quantity by its name, for the rows of tables/units.tsv.  False: no such
+   quantity.                                                                                   */
+bool dimension_find (const char *name, struct dimension *) MUST_CHECK;
 
 extern const struct dimension DIMENSION_NONE, DIMENSION_LENGTH, DIMENSION_MASS, DIMENSION_TIME,
   DIMENSION_TEMPERATURE, DIMENSION_AMOUNT, DIMENSION_VOLUME, DIMENSION_PRESSURE,

@@ -6,7 +6,14 @@ noinst_LIBRARIES += %D%/libunits.a
   %D%/constants.h \
   %D%/dimension.c \
   %D%/dimension.h \
+  %D%/exact.c \
+  %D%/exact.h \
   %D%/unit.c \
   %D%/unit.h \
+  %D%/unit_ascii.c \
+  %D%/unit_read.c \
+  %D%/unit_suggest.c \
+  %D%/unit_table.c \
+  %D%/unit_table.h \
   %D%/workings.c \
   %D%/workings.h

@@ -58,7 +58,10 @@ void unit_table_destroy (struct unit_table *);
 
 /* The unit spelled by the N bytes at TEXT (no blanks in it; UTF-8 twins are understood).
    Borrowed from the table.  Null with FAULT otherwise; kinds: unit-unknown (hint: what may have
-   been meant), unit-open (two meanings: cfm, ton, gal, MBtu), unit-form (a/b*c; %vol; kg(g)).   */
+   been meant), unit-open (two meanings: cfm, ton, gal, MBtu), unit-form (a/b*c; %vol).  Their
+   facts: the text (unit-open: the word in it), what to do, and, where a spelling that reads is
+   offered, that spelling (and a second one as likely).  A null FAULT asks only: no hint is
+   looked for.                                                                                 */
 const struct unit *unit_find (struct unit_table *, const char *text, size_t n,
                               struct fault *) MUST_CHECK;
 
@@ -74,7 +77,8 @@ double unit_to_si (const struct unit *, double figure);
 double unit_from_si (const struct unit *, double si);
 
 /* Do both measure the same thing, so that figures convert by factor and offset alone?  Compares
-   dimension, ratio and family power; not gauge with absolute, not points with differences.    */
+   dimension, ratio, family and family power; not gauge with absolute, not points with
+   differences.                                                                                */
 bool unit_same_measure (const struct unit *, const struct unit *);
 
 /* The unit for a difference of figures in UNIT: its factor without its offset.  */
