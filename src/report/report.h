@@ -24,7 +24,7 @@ struct report_origin {
   const char *line;               /* the physical line the fault points into, as typed */
   const char *statement;          /* for JSON */
   int column_shift;               /* characters the prompt puts before the line */
-  bool quote;                     /* print the line again above the bracket; in files it always is */
+  bool quote;                     /* print the line again above the bracket; always in files */
 };
 
 /* Appends to OUT.  CSV writes its heading row when FIRST is set.  */
