@@ -86,12 +86,25 @@ quote_add (struct text *out, const struct report_style *style, const char *line,
                last > first ? last - start : first - start);
 }
 
+/* A text of one or more lines, each where printed text begins.  */
+static void
+lines_add (struct text *out, const struct report_style *style, const struct text *lines)
+{
+  for (size_t at = 0; at < lines->length;) {
+    const size_t n = strcspn (lines->bytes + at, "\n");
+    text_add_repeated (out, ' ', MARGIN);
+    shown_add_bytes (out, style, lines->bytes + at, n);
+    text_add_char (out, '\n');
+    at += n + 1;
+  }
+}
+
 /* The sentence with what belongs to its line, then each further part on its own.  */
 static void
 words_add (struct text *out, const struct report_style *style, const struct fault_words *words,
            size_t used, bool before_quote)
 {
-  const bool joined = words->phrase.length > 0
+  const bool joined = words->phrase.length > 0 && strchr (words->phrase.bytes, '\n') == NULL
                       && used + words->sentence.length + 2 + words->phrase.length <= PHRASE_WIDTH;
   if (before_quote) {
     shown_add (out, style, words->sentence.bytes);
@@ -102,13 +115,9 @@ words_add (struct text *out, const struct report_style *style, const struct faul
     text_add_char (out, '\n');
     return;
   }
-  const struct text *const rest[] = { &words->phrase, &words->line };
-  for (size_t i = joined ? 1 : 0; i < 2; i++)
-    if (rest[i]->length > 0) {
-      text_add_repeated (out, ' ', MARGIN);
-      shown_add (out, style, rest[i]->bytes);
-      text_add_char (out, '\n');
-    }
+  if (!joined)
+    lines_add (out, style, &words->phrase);
+  lines_add (out, style, &words->line);
 }
 
 static void

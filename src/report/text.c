@@ -29,20 +29,26 @@ larger (size_t a, size_t b)
   return a > b ? a : b;
 }
 
+static const char *
+row_what (const struct answer *answer)
+{
+  return answer->what != NULL ? answer->what : "";
+}
+
 /* What stands in front of a row: what the user called it, else what it is.  */
 static const char *
 row_name (const struct answer *answer)
 {
-  return answer->label != NULL ? answer->label : answer->what;
+  return answer->label != NULL ? answer->label : row_what (answer);
 }
 
 /* Rows are named where they have labels or are about different things.  */
 static bool
 rows_are_named (const struct result *result)
 {
-  const char *first = result->answers->what;
+  const char *first = row_what (result->answers);
   for (const struct answer *a = result->answers; a != NULL; a = a->next)
-    if (a->label != NULL || (a->what != first && strcmp (a->what, first) != 0))
+    if (a->label != NULL || strcmp (row_what (a), first) != 0)
       return true;
   return false;
 }

@@ -269,6 +269,16 @@ fail_phrase (struct fault *fault, struct report_origin *origin)
   fail_at (fault, MESSAGE_NUMBER_COMMA, 1, 5, NULL, NULL);
 }
 
+/* Several ways on, a line each.  */
+static void
+fail_ways (struct fault *fault, struct report_origin *origin)
+{
+  origin->line = origin->statement = "density of lab at 20 degC, 1 bar(a)";
+  origin->column_shift = 6;
+  fail_at (fault, MESSAGE_GAS_OPEN, 12, 14, "lab", "0.93");
+  fault_facts (fault, "gas a = lab normalised\ngas b = lab normalised into N2", NULL);
+}
+
 /* No place, no line.  */
 static void
 fail_nowhere (struct fault *fault, struct report_origin *origin)
@@ -294,6 +304,7 @@ static const struct scene scenes[] = {
   { "long", "text", NULL, fail_long },
   { "line", "prompt json", NULL, fail_line },
   { "phrase", "prompt json", NULL, fail_phrase },
+  { "ways", "prompt json", NULL, fail_ways },
   { "nowhere", "text json", NULL, fail_nowhere }
 };
 

@@ -2,6 +2,7 @@
 # Every form of every hand-made result and fault is what golden/ says, in any locale; what is meant
 # for machines reads as what it claims to be.
 set -u
+# shellcheck source=tests/tap.sh
 . "${srcdir:-.}/tests/tap.sh"
 
 render=tests/renderings/render
