@@ -1,4 +1,5 @@
-# Turns tables of facts into C: one string a row, header first, and the list of all tables.
+# Turns tables of facts into C: one string a row, header first, with a null byte behind every cell,
+# so that the cells are strings as they stand; and the list of all tables.
 #
 # Refuses a row with a wrong number of columns, a row without a source, and a row out of order:
 # rows are sorted by the bytes of their first column, each key once, unless a remark says
@@ -18,7 +19,7 @@ function quoted(s,   i, c, made) {
     if (c == "\\" || c == "\"" || c == "?")
       made = made "\\" c
     else if (c == "\t")
-      made = made "\\t"
+      made = made "\\000"
     else
       made = made c
   }
@@ -31,6 +32,7 @@ function finish_table() {
   if (columns == 0)
     complain(lines, "no line names the columns")
   print "  NULL\n};\n"
+  widths[count] = columns
 }
 
 BEGIN {
@@ -96,6 +98,6 @@ END {
     exit 1
   print "const struct table_text table_built_in[] = {"
   for (i = 1; i <= count; i++)
-    printf "  { \"%s\", %s_rows },\n", names[i], names[i]
-  print "  { NULL, NULL }\n};"
+    printf "  { \"%s\", %d, %s_rows },\n", names[i], widths[i], names[i]
+  print "  { NULL, 0, NULL }\n};"
 }

@@ -4,6 +4,7 @@
 #include <assert.h>
 #include <errno.h>
 #include <math.h>
+#include <stdint.h>
 #include <stdio.h>
 #include <string.h>
 #include "support/arena.h"
@@ -11,17 +12,26 @@
 #include "support/number.h"
 #include "support/text.h"
 
-/* Columns are named by the built-in table.  Cells stand row by row in one array; a user's file may
-   bring its columns in another order and leave some out: those cells are empty.                 */
+/* Where the last cell asked for stands, so that the next one of its row is near.  */
+struct cursor { size_t row, place; const char *at; };
+
+/* A row is its cells as strings one behind the other; nothing of the built-in ones is copied.
+   Columns are named by the built-in table.  A user's file may bring them in another order and leave
+   some out: those cells are empty.                                                              */
 struct table {
   struct arena *arena;
-  const char *name;
-  size_t columns, rows, built_in_rows;
+  const struct table_text *text;
   const char **names;                     /* of the columns */
-  const char **cells;
+  size_t built_in_rows;
+  size_t users_rows;
   const char *users_file;                 /* its path; null: there is none */
-  int *users_lines;                       /* of the rows behind the built-in ones */
+  const char **users_cells;               /* by user's row: its first cell */
+  int *users_lines;
+  size_t *users_place;                    /* by column: which cell of a user's row; or ABSENT */
+  struct cursor *cursor;
 };
+
+#define ABSENT SIZE_MAX
 
 const struct table_text *
 table_text_find (const char *name)
@@ -35,29 +45,57 @@ table_text_find (const char *name)
 size_t
 table_rows (const struct table *table)
 {
-  return table->rows;
+  return table->built_in_rows + table->users_rows;
 }
 
 int
 table_column (const struct table *table, const char *name)
 {
-  for (size_t i = 0; i < table->columns; i++)
+  for (size_t i = 0; i < table->text->columns; i++)
     if (strcmp (table->names[i], name) == 0)
       return (int) i;
   return -1;
-}
-
-const char *
-table_cell (const struct table *table, size_t row, int column)
-{
-  assert (row < table->rows && column < (int) table->columns);
-  return column < 0 ? "" : table->cells[row * table->columns + (size_t) column];
 }
 
 bool
 table_row_is_users (const struct table *table, size_t row)
 {
   return row >= table->built_in_rows;
+}
+
+static const char *
+first_cell (const struct table *table, size_t row)
+{
+  return table_row_is_users (table, row) ? table->users_cells[row - table->built_in_rows]
+                                         : table->text->rows[row + 1];
+}
+
+/* The cell N cells behind the one at AT.  */
+static const char *
+walk (const char *at, size_t n)
+{
+  for (; n > 0; n--)
+    at += strlen (at) + 1;
+  return at;
+}
+
+const char *
+table_cell (const struct table *table, size_t row, int column)
+{
+  struct cursor *cursor = table->cursor;
+  size_t place;
+
+  assert (row < table_rows (table) && column < (int) table->text->columns);
+  if (column < 0)
+    return "";
+  place = table_row_is_users (table, row) ? table->users_place[column] : (size_t) column;
+  if (place == ABSENT)
+    return "";
+  if (cursor->at == NULL || cursor->row != row || cursor->place > place)
+    *cursor = (struct cursor) { row, 0, first_cell (table, row) };
+  cursor->at = walk (cursor->at, place - cursor->place);
+  cursor->place = place;
+  return cursor->at;
 }
 
 static bool
@@ -77,7 +115,7 @@ table_complain (const struct table *table, size_t row, const char *what, struct 
 
     return complain (table->users_file, arena_format (table->arena, "%d", line), what, fault);
   }
-  return complain (arena_format (table->arena, "%s.tsv", table->name),
+  return complain (arena_format (table->arena, "%s.tsv", table->text->name),
                    table_cell (table, row, 0), what, fault);
 }
 
@@ -106,99 +144,12 @@ table_number (const struct table *table, size_t row, int column, double *value,
 
 /* Reading.  */
 
-/* Cuts LINE, which is changed, at its tabs; the first MOST cells go into CELLS.  Returns how many
-   there are.                                                                                   */
-static size_t
-cut (char *line, size_t length, size_t most, const char **cells)
-{
-  char *end = line + length;
-  size_t count = 0;
-
-  for (;;) {
-    char *tab = memchr (line, '\t', (size_t) (end - line));
-
-    if (count < most)
-      cells[count] = line;
-    count++;
-    if (tab == NULL)
-      return count;
-    *tab = '\0';
-    line = tab + 1;
-  }
-}
-
-static size_t
-count_cells (const char *line)
-{
-  size_t count = 1;
-
-  while ((line = strchr (line, '\t')) != NULL) {
-    count++;
-    line++;
-  }
-  return count;
-}
-
-/* What is wrong with a row of COUNT cells, or null.  */
-static const char *
-row_defect (struct arena *arena, const char *const *cells, size_t count, size_t columns)
-{
-  const char *source;
-
-  if (count != columns)
-    return arena_format (arena, "%zu cells where the heading has %zu", count, columns);
-  if (cells[0][0] == '\0')
-    return "no key in the first column";
-  source = cells[columns - 1];
-  if (source[strspn (source, " ")] == '\0')
-    return "no source";
-  return NULL;
-}
-
-static const char **
-row_cells (const struct table *table, size_t row)
-{
-  return table->cells + row * table->columns;
-}
-
-/* The built-in rows, with room for USERS_ROWS more behind them.  */
-static bool
-read_built_in (struct table *table, const struct table_text *text, size_t users_rows,
-               struct fault *fault)
-{
-  const char *const *lines = text->rows;
-  size_t count = 0;
-
-  while (lines[count + 1] != NULL)
-    count++;
-  table->columns = count_cells (lines[0]);
-  table->names = ARENA_ARRAY (table->arena, table->columns, const char *);
-  cut (arena_string (table->arena, lines[0]), strlen (lines[0]), table->columns, table->names);
-  table->cells = ARENA_ARRAY (table->arena, (count + users_rows) * table->columns, const char *);
-  table->users_lines = ARENA_ARRAY (table->arena, users_rows, int);
-  table->built_in_rows = count;
-  for (size_t row = 0; row < count; row++) {
-    size_t length = strlen (lines[row + 1]);
-    const char **cells = row_cells (table, row);
-    size_t found = cut (arena_copy (table->arena, lines[row + 1], length), length,
-                        table->columns, cells);
-    const char *defect = row_defect (table->arena, cells, found, table->columns);
-
-    table->rows++;
-    if (defect != NULL)
-      return table_complain (table, row, defect, fault);
-  }
-  return true;
-}
-
 /* A user's file while it is read.  */
 struct users_text {
-  const char *path;
+  const char *path;                       /* null: there is no file */
   char *next, *end;                       /* what is left of it, in the table's arena */
   int line;
   size_t columns;                         /* of its heading; 0 before that was read */
-  size_t *place;                          /* of each of its columns among the table's */
-  const char **cells;                     /* of the row at hand */
 };
 
 static bool
@@ -208,33 +159,48 @@ users_complain (const struct table *table, const struct users_text *users, const
   return complain (users->path, arena_format (table->arena, "%d", users->line), what, fault);
 }
 
+/* Cuts LINE into strings at its tabs; returns how many, and in *LAST the last one.  */
+static size_t
+cut (char *line, size_t length, const char **last)
+{
+  char *end = line + length;
+  size_t count = 1;
+  char *tab;
+
+  while ((tab = memchr (line, '\t', (size_t) (end - line))) != NULL) {
+    *tab = '\0';
+    line = tab + 1;
+    count++;
+  }
+  *last = line;
+  return count;
+}
+
 static bool
 read_heading (struct table *table, struct users_text *users, char *line, size_t length,
               struct fault *fault)
 {
-  size_t count = count_cells (line);
-  bool *taken = ARENA_ARRAY (table->arena, table->columns, bool);
+  const char *name = line, *last;
+  size_t columns = table->text->columns;
 
-  users->columns = count;
-  users->place = ARENA_ARRAY (table->arena, count, size_t);
-  users->cells = ARENA_ARRAY (table->arena, count, const char *);
-  cut (line, length, count, users->cells);
-  for (size_t i = 0; i < count; i++) {
-    int column = table_column (table, users->cells[i]);
-    const char *wrong = column < 0 ? "has no column" : "has two columns";
+  users->columns = cut (line, length, &last);
+  for (size_t i = 0; i < columns; i++)
+    table->users_place[i] = ABSENT;
+  for (size_t i = 0; i < users->columns; i++, name = walk (name, 1)) {
+    int column = table_column (table, name);
 
-    if (column < 0 || taken[column])
+    if (column < 0 || table->users_place[column] != ABSENT)
       return users_complain (table, users,
-                             arena_format (table->arena, "the table %s %s '%s'", table->name,
-                                           wrong, users->cells[i]), fault);
-    taken[column] = true;
-    users->place[i] = (size_t) column;
+                             arena_format (table->arena, "the table %s has %s '%s'",
+                                           table->text->name,
+                                           column < 0 ? "no column" : "two columns", name), fault);
+    table->users_place[column] = i;
   }
-  if (users->place[0] != 0)
+  if (table->users_place[0] != 0)
     return users_complain (table, users,
                            arena_format (table->arena, "the first column is not '%s'",
                                          table->names[0]), fault);
-  if (users->place[count - 1] != table->columns - 1)
+  if (table->users_place[columns - 1] != users->columns - 1)
     return users_complain (table, users, "the last column is not 'source'", fault);
   return true;
 }
@@ -243,18 +209,20 @@ static bool
 read_users_row (struct table *table, struct users_text *users, char *line, size_t length,
                 struct fault *fault)
 {
-  size_t found = cut (line, length, users->columns, users->cells);
-  const char *defect = row_defect (table->arena, users->cells, found, users->columns);
-  const char **cells = row_cells (table, table->rows);
+  const char *source;
+  size_t count = cut (line, length, &source);
 
-  if (defect != NULL)
-    return users_complain (table, users, defect, fault);
-  for (size_t i = 0; i < table->columns; i++)
-    cells[i] = "";
-  for (size_t i = 0; i < users->columns; i++)
-    cells[users->place[i]] = users->cells[i];
-  table->users_lines[table->rows - table->built_in_rows] = users->line;
-  table->rows++;
+  if (count != users->columns)
+    return users_complain (table, users,
+                           arena_format (table->arena, "%zu cells where the heading has %zu", count,
+                                         users->columns), fault);
+  if (line[0] == '\0')
+    return users_complain (table, users, "no key in the first column", fault);
+  if (source[strspn (source, " ")] == '\0')
+    return users_complain (table, users, "no source", fault);
+  table->users_cells[table->users_rows] = line;
+  table->users_lines[table->users_rows] = users->line;
+  table->users_rows++;
   return true;
 }
 
@@ -344,29 +312,47 @@ count_lines (const struct users_text *users)
 {
   size_t count = 1;
 
-  for (const char *c = users->next; c != NULL && c < users->end; c++)
+  for (const char *c = users->next; c < users->end; c++)
     if (*c == '\n')
       count++;
-  return users->path != NULL ? count : 0;
+  return count;
+}
+
+/* The rows of a user's file, if there is one, behind the built-in ones.  */
+static bool
+add_users_rows (struct table *table, const char *directory, struct fault *fault)
+{
+  struct users_text users;
+  const char *path = arena_format (table->arena, "%s/%s.tsv", directory, table->text->name);
+  size_t most;
+
+  if (!open_users (table->arena, path, &users, fault))
+    return false;
+  if (users.path == NULL)
+    return true;
+  most = count_lines (&users);
+  table->users_file = path;
+  table->users_cells = ARENA_ARRAY (table->arena, most, const char *);
+  table->users_lines = ARENA_ARRAY (table->arena, most, int);
+  table->users_place = ARENA_ARRAY (table->arena, table->text->columns, size_t);
+  return read_users_rows (table, &users, fault);
 }
 
 struct table *
 table_read (struct arena *arena, const char *name, const char *directory, struct fault *fault)
 {
-  const struct table_text *text = table_text_find (name);
   struct table *table = ARENA_NEW (arena, struct table);
-  struct users_text users = { 0 };
 
-  assert (text != NULL);
-  if (directory != NULL
-      && !open_users (arena, arena_format (arena, "%s/%s.tsv", directory, name), &users, fault))
-    return NULL;
   table->arena = arena;
-  table->name = text->name;
-  table->users_file = users.path;
-  if (!read_built_in (table, text, count_lines (&users), fault))
-    return NULL;
-  if (users.path != NULL && !read_users_rows (table, &users, fault))
+  table->text = table_text_find (name);
+  assert (table->text != NULL);
+  table->cursor = ARENA_NEW (arena, struct cursor);
+  table->names = ARENA_ARRAY (arena, table->text->columns, const char *);
+  for (size_t i = 0; i < table->text->columns; i++)
+    table->names[i] = walk (table->text->rows[0], i);
+  while (table->text->rows[table->built_in_rows + 1] != NULL)
+    table->built_in_rows++;
+  if (directory != NULL && !add_users_rows (table, directory, fault))
     return NULL;
   return table;
 }
