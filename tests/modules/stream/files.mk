@@ -3,3 +3,7 @@
 #   suites += %D%/t_NAME
 #   %C%_t_NAME_SOURCES = %D%/t_NAME.c
 #   %C%_t_NAME_LDADD = $(with_stream)
+
+suites += %D%/t_stream
+%C%_t_stream_SOURCES = %D%/t_stream.c
+%C%_t_stream_LDADD = $(with_stream)
