@@ -32,7 +32,9 @@ memory_sum (size_t a, size_t b)
 size_t
 memory_product (size_t a, size_t b)
 {
-  if (b != 0 && a > SIZE_MAX / b)
+  const size_t half = (size_t) 1 << sizeof (size_t) * 4;   /* the root of what a size can hold */
+
+  if ((a >= half || b >= half) && b != 0 && a > SIZE_MAX / b)
     give_up ();
   return a * b;
 }
