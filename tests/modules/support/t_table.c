@@ -30,7 +30,8 @@ const struct table_text table_built_in[] = {
   { NULL, 0, NULL }
 };
 
-enum { BUILT_IN = 4 };
+enum { BUILT_IN = 4 };                     /* rows of vents */
+enum { NAME, HEIGHT, GAS, SOURCE };        /* and its columns */
 
 /* A folder for a user's tables, and what a case reads with.  */
 static struct desk { struct arena *arena; struct fault fault; char folder[32], file[48]; } desk;
@@ -210,11 +211,11 @@ users_rows_stand_behind (void)
   table = read_with (file, sizeof file - 1);
   if (CHECK (table != NULL)) {
     SAME_INT (table_rows (table), BUILT_IN + 2);
-    SAME_TEXT (table_cell (table, BUILT_IN, 0), "flare");
-    SAME_TEXT (table_cell (table, BUILT_IN, table_column (table, "gas")), "biogas");
-    SAME_TEXT (table_cell (table, BUILT_IN + 1, table_column (table, "gas")), "");
-    SAME_TEXT (table_cell (table, BUILT_IN + 1, table_column (table, "source")), "my survey");
-    CHECK (table_number (table, BUILT_IN + 1, table_column (table, "height_m"), &value, &desk.fault));
+    SAME_TEXT (table_cell (table, BUILT_IN, NAME), "flare");
+    SAME_TEXT (table_cell (table, BUILT_IN, GAS), "biogas");
+    SAME_TEXT (table_cell (table, BUILT_IN + 1, GAS), "");
+    SAME_TEXT (table_cell (table, BUILT_IN + 1, SOURCE), "my survey");
+    CHECK (table_number (table, BUILT_IN + 1, HEIGHT, &value, &desk.fault));
     NEAR (value, 4, 0);
     CHECK (!table_row_is_users (table, BUILT_IN - 1));
     CHECK (table_row_is_users (table, BUILT_IN));
