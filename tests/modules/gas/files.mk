@@ -46,3 +46,10 @@ check_PROGRAMS += %D%/print_pressures
 %C%_print_pressures_LDADD = $(upto_gas)
 TESTS += %D%/moisture_library.sh
 EXTRA_DIST += %D%/moisture_library.sh
+
+# Molar masses against python3-periodictable, where that is installed.
+check_PROGRAMS += %D%/print_masses
+%C%_print_masses_SOURCES = %D%/print_masses.c
+%C%_print_masses_LDADD = $(upto_gas)
+TESTS += %D%/masses_library.sh
+EXTRA_DIST += %D%/masses_library.sh
