@@ -139,6 +139,8 @@ blend_and_remainder (void)
     for (int i = 0; i < SAMPLES; i++) {
       double was = moles_of (&a, &sample[i]), in_blend = moles_of (&blend, &sample[i]);
       CHECK (fabs (moles_of (&left, &sample[i]) - was) <= 1.1e-13 * in_blend);
+      if (!(was > 0))
+        CHECK (composition_fraction (left.gas, &sample[i]) <= 0);
     }
   }
 }
