@@ -53,25 +53,22 @@ fill_row (const struct words *w, size_t i, size_t *const rows[3])
   return smallest;
 }
 
-/* The distance, or LIMIT + 1; ROWS has room for three rows.  Every cell is at least the least of
-   the row above it, or one more than the least of the row above that: once both are beyond the
-   limit, so is the end.                                                                        */
+/* The distance, or LIMIT + 1; ROWS has room for three rows.  From one row to the next the least
+   cell never falls and rises by 1 at most, so a swap, which costs 1 over two rows, does not get
+   below it either: once it is beyond the limit, so is the end.                                 */
 static size_t
 distance_within (const struct words *w, size_t limit, size_t *rows)
 {
   size_t width = w->b_length + 1;
   size_t *turn[3] = { rows, rows + width, rows + 2 * width };      /* this, above, two above */
-  size_t smallest_above = 0;
 
   for (size_t j = 0; j < width; j++)
     turn[1][j] = j;
   for (size_t i = 1; i <= w->a_length; i++) {
-    size_t smallest = fill_row (w, i, turn);
     size_t *oldest = turn[2];
 
-    if (smallest > limit && smallest_above >= limit)
+    if (fill_row (w, i, turn) > limit)
       return limit + 1;
-    smallest_above = smallest;
     turn[2] = turn[1];
     turn[1] = turn[0];
     turn[0] = oldest;

@@ -115,6 +115,8 @@ sequences_of_the_rfc (void)
     SAME_INT (length, s->code < 0 ? 0 : s->length);
     SAME_INT (code, s->code < 0 ? 4711 : s->code);
     SAME_INT (utf8_first_bad (exact, s->length), s->code < 0 ? 0 : s->length);
+    for (size_t cut = 0; cut < s->length; cut++)
+      SAME_INT (utf8_decode (exact, cut, &code), 0);
     free (exact);
   }
   SAME_INT (utf8_decode ("", 0, &(unsigned) { 0 }), 0);
