@@ -30,20 +30,38 @@ hash_of (const char *bytes, size_t n)
   return hash;
 }
 
-/* A name looked for: by its squeezed form, and letter by letter where PLAIN is not null.  */
-struct wanted { enum name_kind kind; const char *squeezed, *plain; size_t length, plain_length; };
+/* MM, AN, IPA: two or three capitals.  In small letters they are somebody's own names, misspelt.  */
+static bool
+is_abbreviation (const struct name_entry *entry)
+{
+  bool capitals = entry->length <= 3;
+
+  for (size_t i = 0; i < entry->length && capitals; i++)
+    capitals = entry->text[i] >= 'A' && entry->text[i] <= 'Z';
+  return capitals;
+}
+
+/* A name looked for: by its squeezed form, and letter by letter too if EXACT.  PLAIN is null while
+   names are entered that do not count letter by letter.                                        */
+struct wanted {
+  enum name_kind kind;
+  bool exact;
+  const char *squeezed, *plain;
+  size_t length, plain_length;
+};
 
 static bool
 is_wanted (const struct name_entry *entry, const struct wanted *wanted)
 {
   char other[NAMING_ROOM];
+  bool exact = wanted->exact
+               || (entry->kind == NAME_WORD && wanted->plain != NULL && is_abbreviation (entry));
 
   return entry->kind == wanted->kind
          && naming_squeezed (entry->text, entry->length, other) == wanted->length
          && memcmp (other, wanted->squeezed, wanted->length) == 0
-         && (wanted->plain == NULL
-             || (entry->length == wanted->plain_length
-                 && memcmp (entry->text, wanted->plain, wanted->plain_length) == 0));
+         && (!exact || (entry->length == wanted->plain_length
+                        && memcmp (entry->text, wanted->plain, wanted->plain_length) == 0));
 }
 
 /* The entry that is wanted; null, with *SLOT the free one, if there is none.  Half the slots are
@@ -83,12 +101,13 @@ enter_head (struct name_index *index, const char *text, size_t n)
   index->heads[bit / 32] |= UINT32_C (1) << bit % 32;
 }
 
-/* Of two spellings that lead to one row the one with blanks stays: it is the name of several
-   words.                                                                                        */
+/* Of two spellings that lead to one row the one with blanks stays, which is the name of several
+   words, and EtO rather than ETO.                                                               */
 static bool
 stays (const struct name_entry *entry, size_t number)
 {
-  return entry->number == number && memchr (entry->text, ' ', entry->length) != NULL;
+  return entry->number == number && !is_abbreviation (entry)
+         && (entry->length <= 3 || memchr (entry->text, ' ', entry->length) != NULL);
 }
 
 bool
@@ -96,8 +115,8 @@ name_index_add (struct name_index *index, enum name_kind kind, const char *text,
                 size_t number)
 {
   char squeezed[NAMING_ROOM];
-  struct wanted wanted = { .kind = kind, .squeezed = squeezed, .plain_length = n,
-                           .plain = kind == NAME_KEY ? text : NULL };
+  struct wanted wanted = { .kind = kind, .exact = kind == NAME_KEY, .squeezed = squeezed,
+                           .plain = kind == NAME_KEY ? text : NULL, .plain_length = n };
   struct name_entry *entry;
   size_t slot;
 
@@ -119,27 +138,29 @@ name_index_add (struct name_index *index, enum name_kind kind, const char *text,
   return true;
 }
 
+static const struct name_entry *
+find (const struct name_index *index, struct wanted wanted, const char *name, size_t n)
+{
+  char squeezed[NAMING_ROOM], plain[NAMING_ROOM];
+  size_t slot;
+
+  wanted.squeezed = squeezed;
+  wanted.length = naming_squeezed (name, n, squeezed);
+  wanted.plain = plain;
+  wanted.plain_length = naming_plain (name, n, plain);
+  return wanted.length == 0 ? NULL : look_up (index, &wanted, &slot);
+}
+
 const struct name_entry *
 name_index_find (const struct name_index *index, enum name_kind kind, const char *name, size_t n)
 {
-  char squeezed[NAMING_ROOM];
-  struct wanted wanted = { .kind = kind, .squeezed = squeezed };
-  size_t slot;
-
-  wanted.length = naming_squeezed (name, n, squeezed);
-  return wanted.length == 0 ? NULL : look_up (index, &wanted, &slot);
+  return find (index, (struct wanted) { .kind = kind }, name, n);
 }
 
 const struct name_entry *
 name_index_find_key (const struct name_index *index, const char *name, size_t n)
 {
-  char squeezed[NAMING_ROOM], plain[NAMING_ROOM];
-  struct wanted wanted = { .kind = NAME_KEY, .squeezed = squeezed, .plain = plain };
-  size_t slot;
-
-  wanted.length = naming_squeezed (name, n, squeezed);
-  wanted.plain_length = naming_plain (name, n, plain);
-  return wanted.length == 0 ? NULL : look_up (index, &wanted, &slot);
+  return find (index, (struct wanted) { .kind = NAME_KEY, .exact = true }, name, n);
 }
 
 bool

@@ -41,7 +41,8 @@ void name_index_init (struct name_index *, struct arena *, size_t room);
 bool name_index_add (struct name_index *, enum name_kind, const char *text, size_t n,
                      size_t number);
 
-/* The entry of KIND for the name, whose spelling does not count; null if there is none.  */
+/* The entry of KIND for the name, whose spelling does not count, but for words of two or three
+   capitals (MM, IPA): those count letter by letter.  Null if there is none.                    */
 const struct name_entry *name_index_find (const struct name_index *, enum name_kind,
                                           const char *name, size_t n) MUST_CHECK;
 /* The key that is letter by letter that name, subscript digits aside.  */

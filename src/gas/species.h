@@ -41,10 +41,11 @@ enum species_match { SPECIES_NONE, SPECIES_KEY, SPECIES_SYNONYM, SPECIES_PLAIN_F
                      SPECIES_AMBIGUOUS };
 
 /* What the N bytes at NAME stand for.  Keys are matched letter by letter and come first; in names,
-   synonyms and ambiguous names capitals, blanks and hyphens do not count.  Subscript digits are
-   read as digits.  *FOUND is set for KEY, SYNONYM and PLAIN_FORMULA; *CANDIDATES (borrowed, parted
-   by commas) for AMBIGUOUS.  A plain formula (C7H14O2, S) needs known elements only; one that is
-   a key but for its capitals (co2, Co) is taken for a misspelling: NONE.                       */
+   synonyms and ambiguous names capitals, blanks and hyphens do not count, but synonyms of two or
+   three capitals (MM, IPA) are matched like keys.  Subscript digits are read as digits.  *FOUND is
+   set for KEY, SYNONYM and PLAIN_FORMULA; *CANDIDATES (borrowed, parted by commas) for AMBIGUOUS.
+   A plain formula (C7H14O2, S) needs known elements only; one that is a key but for its capitals
+   (co2, Co) is taken for a misspelling: NONE.                                                  */
 enum species_match species_find (struct species_table *, const char *name, size_t n,
                                  const struct species **found, const char **candidates);
 

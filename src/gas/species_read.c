@@ -30,11 +30,12 @@ read_positive (const struct table *table, size_t row, int column, double scale, 
   return true;
 }
 
+/* The formula as the row has it, put in Hill order, and its molar mass.  */
 static bool
 read_formula (struct species_table *species, const struct table *table, size_t row,
               struct species *one, struct fault *fault)
 {
-  const char *cell = table_cell (table, row, table_column (table, "formula"));
+  const char *cell = one->formula;
   char hill[FORMULA_ROOM];
   struct atoms atoms;
 
@@ -48,7 +49,7 @@ read_formula (struct species_table *species, const struct table *table, size_t r
 }
 
 struct species_columns {
-  int name, synonyms, cas, T_critical, p_critical, V_critical, acentric_factor, T_boiling, boiling,
+  int name, synonyms, cas, formula, T_critical, p_critical, V_critical, acentric_factor, T_boiling, boiling,
       note, source;
 };
 
@@ -59,6 +60,7 @@ columns_of (const struct table *table)
     .name = table_column (table, "name"),
     .synonyms = table_column (table, "synonyms"),
     .cas = table_column (table, "CAS"),
+    .formula = table_column (table, "formula"),
     .T_critical = table_column (table, "T_critical_K"),
     .p_critical = table_column (table, "p_critical_kPa"),
     .V_critical = table_column (table, "V_critical_cm3_mol"),
@@ -92,11 +94,9 @@ read_row (struct species_table *species, const struct table *table, size_t row,
     .name = name[0] == '\0' ? key : name,
     .synonyms = table_cell (table, row, at->synonyms),
     .cas = table_cell (table, row, at->cas),
-    .sublimes = strcmp (table_cell (table, row, at->boiling), "sublimes") == 0,
+    .formula = table_cell (table, row, at->formula),
     .exposure_limit = (double) NAN, .exposure_source = "", .flags = "",
     .lower_flammable = (double) NAN, .upper_flammable = (double) NAN, .flammable_source = "",
-    .source = table_cell (table, row, at->source),
-    .note = table_cell (table, row, at->note),
     .origin = table_row_is_users (table, row) ? SPECIES_USERS : SPECIES_TABLE,
   };
   struct species *place = species_of_key (species, key);
@@ -104,6 +104,9 @@ read_row (struct species_table *species, const struct table *table, size_t row,
   if (!read_formula (species, table, row, &one, fault)
       || !read_constants (table, row, at, &one, fault))
     return false;
+  one.sublimes = strcmp (table_cell (table, row, at->boiling), "sublimes") == 0;
+  one.note = table_cell (table, row, at->note);
+  one.source = table_cell (table, row, at->source);
   if (place == NULL) {
     place = &species->rows[species->size];
     if (!name_index_add (&species->names, NAME_KEY, key, strlen (key), species->size))

@@ -146,6 +146,11 @@ names (void)
     { "1-butene", SPECIES_SYNONYM, "n1C4H8" },
     { "R-134a", SPECIES_SYNONYM, "R134a" },
     { "Ni(CO)4", SPECIES_SYNONYM, "NiCO4" },
+    { "IPA", SPECIES_SYNONYM, "iC3H7OH" },
+    { "ipa", SPECIES_NONE, NULL },                       /* abbreviations are as written */
+    { "an", SPECIES_NONE, NULL },
+    { "EtO", SPECIES_SYNONYM, "EO" },
+    { "ETO", SPECIES_SYNONYM, "EO" },
     { "CO", SPECIES_KEY, "CO" },
     { "Co", SPECIES_NONE, NULL },                        /* no cobalt by a slip of the hand */
     { "co2", SPECIES_NONE, NULL },
