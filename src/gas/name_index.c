@@ -30,7 +30,7 @@ hash_of (const char *bytes, size_t n)
   return hash;
 }
 
-/* MM, AN, IPA: two or three capitals.  In small letters they are somebody's own names, misspelt.  */
+/* MM, AN, IPA: up to three capitals.  In small letters they are somebody's own names, misspelt.  */
 static bool
 is_abbreviation (const struct name_entry *entry)
 {

@@ -49,8 +49,8 @@ read_formula (struct species_table *species, const struct table *table, size_t r
 }
 
 struct species_columns {
-  int name, synonyms, cas, formula, T_critical, p_critical, V_critical, acentric_factor, T_boiling, boiling,
-      note, source;
+  int name, synonyms, cas, formula, T_critical, p_critical, V_critical, acentric_factor,
+      T_boiling, boiling, note, source;
 };
 
 static struct species_columns
