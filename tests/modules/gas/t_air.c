@@ -30,9 +30,10 @@ key (const char *name)
   return found;
 }
 
-/* U.S. Standard Atmosphere, 1976: mean molar mass at sea level 28.9644 g/mol.  A. Picard et al.,
-   Metrologia 45 (2008) 149: 28.96546 g/mol.  E. W. Lemmon et al., J. Phys. Chem. Ref. Data 29 (2000)
-   331: 28.9586 g/mol.  All by older atomic weights, which differ by up to 3e-5.                */
+/* U.S. Standard Atmosphere, 1976: mean molar mass at sea level 28.9644 g/mol (from memory).
+   A. Picard et al., Metrologia 45 (2008) 149: 28.96546 g/mol.  E. W. Lemmon et al., J. Phys. Chem.
+   Ref. Data 29 (2000) 331: 28.9586 g/mol (from memory).  All by older atomic weights, which differ
+   by up to 3e-5.                                                                                */
 static void
 molar_masses (void)
 {
@@ -91,8 +92,8 @@ definitions (void)
 static void
 peaks (void)
 {
-  static const char *const refused[] = { "O2", "O2+", "+O2", "", "+", "O2+O2", "O2+oxygen", "O2+H2S",
-                                         "C6+", "raw+O2", "N2+O2+Ar+CO2+Ne", "O2+N2O" };
+  static const char *const refused[] = { "O2", "O2+", "+O2", "", "+", "O2+O2", "O2+oxygen",
+                                         "O2+H2S", "C6+", "raw+O2", "N2+O2+Ar+CO2+Ne", "O2+N2O" };
   struct part of[AIR_PEAK_PARTS];
 
   start ();
