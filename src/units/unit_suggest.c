@@ -36,11 +36,12 @@ guess_mistake (const struct unit_table *table, const char *atom, struct guess *g
 {
   size_t found = 0, n = strlen (atom);
 
+  *guess = (struct guess) { { NULL, NULL } };
   for (size_t i = 0; i < table->entry_count; i++) {
     const struct unit_entry *entry = &table->entries[i];
     const char *list = entry->mistaken, *piece;
     size_t length;
-    while (found < 2 && unit_next_piece (&list, '|', &piece, &length))
+    while (!entry->hidden && found < 2 && unit_next_piece (&list, '|', &piece, &length))
       if (length == n && is_same_but_capitals (piece, atom, n))
         guess->word[found++] = entry->row.spelling;
   }
@@ -142,7 +143,8 @@ guess_slash (const struct unit_table *table, struct arena *arena, const char *at
   return false;
 }
 
-/* %RH and %O2 are not offered: CO2 is one letter away.  */
+/* %RH and %O2 are not offered: CO2 is one letter away.  A word of two letters may have one too many
+   or too few, but not another one.                                                            */
 static void
 visit_nearest (const char *word, const struct unit_entry *entry, bool prefixed, void *with)
 {
@@ -150,7 +152,8 @@ visit_nearest (const char *word, const struct unit_entry *entry, bool prefixed, 
   size_t length = strlen (word);
 
   if (entry->open || entry->sort == UNIT_HUMIDITY || entry->sort == UNIT_OXYGEN
-      || length > search->length + search->limit || search->length > length + search->limit)
+      || length > search->length + search->limit || search->length > length + search->limit
+      || (search->length == 2 && length == 2))
     return;
   size_t apart = text_distance (search->atom, word, search->limit);
   if (apart <= search->limit)
@@ -158,15 +161,15 @@ visit_nearest (const char *word, const struct unit_entry *entry, bool prefixed, 
 }
 
 /* The word least apart.  A change must leave more than half of a word as it was, so that a name
-   of four letters is not taken for a unit of four others; of equals a word without prefix goes
-   first, then the table's order.                                                              */
+   of four letters is not taken for a unit of four others; N2 or h2 is a gas; of equals a word
+   without prefix goes first, then the table's order.                                          */
 static bool
 guess_nearest (const struct unit_table *table, struct arena *arena, const char *atom,
                struct guess *guess)
 {
   size_t n = strlen (atom), limit = text_reach (atom);
 
-  if (n < 2)
+  if (n < 2 || (n == 2 && atom[1] >= '0' && atom[1] <= '9'))
     return false;
   if (limit > 1 && 2 * limit >= n)
     limit = (n - 1) / 2;
@@ -182,11 +185,28 @@ static bool
 guess_word (const struct unit_table *table, struct arena *arena, const char *atom,
             struct guess *guess)
 {
-  *guess = (struct guess) { { NULL, NULL } };
   return guess_mistake (table, atom, guess) || guess_capitals (table, arena, atom, guess)
          || guess_qualifier (table, arena, atom, guess)
          || guess_plural (table, arena, atom, guess) || guess_slash (table, arena, atom, guess)
          || guess_nearest (table, arena, atom, guess);
+}
+
+/* The whole text, or what stands before its qualifier, as a mistake: kg/cm2(g).  */
+static bool
+guess_whole (const struct unit_table *table, struct arena *arena, const char *ascii,
+             struct guess *guess)
+{
+  const char *bracket = strrchr (ascii, '(');
+  struct unit_atom found;
+
+  if (guess_mistake (table, ascii, guess))
+    return true;
+  if (bracket == NULL
+      || !guess_mistake (table, arena_copy (arena, ascii, (size_t) (bracket - ascii)), guess))
+    return false;
+  guess->word[0] = arena_format (arena, "%s%s", guess->word[0], bracket);
+  guess->word[1] = NULL;
+  return unit_atom_find (table, guess->word[0], strlen (guess->word[0]), &found);
 }
 
 /* Mends one unknown word of ASCII after the other until it reads.  False: no way to.  */
@@ -194,12 +214,14 @@ static bool
 mend (const struct unit_table *table, struct arena *arena, const char *ascii,
       struct guess *mended)
 {
-  struct guess guess = { { NULL, NULL } };
+  struct guess guess;
 
+  if (guess_whole (table, arena, ascii, mended))
+    return true;
   for (int i = 0; i < MOST_REPAIRS && strlen (ascii) <= UNIT_LONGEST; i++) {
     struct unit_reading reading = unit_read (table, ascii);
     if (reading.outcome == UNIT_READ) {
-      mended->word[0] = ascii;
+      *mended = (struct guess) { { ascii, NULL } };
       return true;
     }
     if (reading.outcome != UNIT_IS_UNKNOWN)
@@ -208,8 +230,6 @@ mend (const struct unit_table *table, struct arena *arena, const char *ascii,
     if (!guess_word (table, arena, arena_copy (arena, ascii + reading.first, reading.length),
                      &guess))
       return false;
-    bool alone = reading.first == 0 && *behind == '\0';
-    mended->word[1] = i == 0 && alone ? guess.word[1] : NULL;
     ascii = arena_format (arena, "%.*s%s%s", (int) reading.first, ascii, guess.word[0], behind);
   }
   return false;

@@ -201,15 +201,28 @@ enter (struct unit_table *table, struct unit_entry *entry)
   return wrong;
 }
 
-/* A user's row takes the place of the built-in one of the same spelling.  */
+static void
+remove_word (struct unit_table *table, const struct unit_entry *entry, const char *word, size_t n)
+{
+  if (map_find (table->words, word, n) == entry)
+    map_put (table->words, word, n, NULL);
+}
+
+/* A user's row takes the place of the built-in one of the same spelling, aliases and all.  */
 static void
 hide_replaced (struct unit_table *table, const struct unit_entry *entry)
 {
-  if (!entry->row.users)
+  const char *spelling = entry->row.spelling, *piece;
+  struct unit_entry *other = map_find (table->words, spelling, strlen (spelling));
+  size_t length;
+
+  if (!entry->row.users || other == NULL || other->row.users
+      || strcmp (other->row.spelling, spelling) != 0)
     return;
-  for (struct unit_entry *other = table->entries; other < entry; other++)
-    if (strcmp (other->row.spelling, entry->row.spelling) == 0)
-      other->hidden = true;
+  other->hidden = true;
+  remove_word (table, other, spelling, strlen (spelling));
+  for (const char *list = other->aliases; unit_next_piece (&list, '|', &piece, &length);)
+    remove_word (table, other, piece, length);
 }
 
 static bool
@@ -232,10 +245,10 @@ fill (struct unit_table *table, const char *directory, struct fault *fault)
   for (size_t i = 0; i < table->entry_count; i++) {
     if (!read_entry (&table->entries[i], rows, i, &columns, fault))
       return false;
+    hide_replaced (table, &table->entries[i]);
     const char *wrong = enter (table, &table->entries[i]);
     if (wrong != NULL)
       return table_complain (rows, i, wrong, fault);
-    hide_replaced (table, &table->entries[i]);
   }
   for (size_t i = 0; i < table->entry_count; i++)
     if (!table->entries[i].open && !table->entries[i].hidden)
@@ -354,6 +367,8 @@ unit_word_each (const struct unit_table *table,
     const struct unit_entry *entry = &table->entries[i];
     const char *list = entry->aliases, *piece;
     size_t length;
+    if (entry->hidden)
+      continue;
     visit_stem (&walk, entry, entry->row.spelling, strlen (entry->row.spelling));
     while (unit_next_piece (&list, '|', &piece, &length))
       visit_stem (&walk, entry, piece, length);
