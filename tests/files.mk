@@ -16,6 +16,7 @@ AM_TESTS_ENVIRONMENT = \
 EXTRA_DIST += %D%/run.sh %D%/tap.sh $(scripts)
 scripts = \
   %D%/layers.sh \
+  %D%/options.sh \
   %D%/runner.sh \
   %D%/sizes.sh \
   %D%/tables.sh
