@@ -69,6 +69,9 @@ const struct unit *unit_find (struct unit_table *, const char *text, size_t n,
 struct unit_row { const char *spelling, *quantity, *name, *factor, *source; bool users; };
 size_t unit_table_rows (const struct unit_table *);
 struct unit_row unit_table_row (const struct unit_table *, size_t i);
+/* The row of a spelling or an alias, perhaps with a prefix (its factor is that of the bare one).
+   False: it is an expression, or no unit.                                                      */
+bool unit_row_find (const struct unit_table *, const char *spelling, struct unit_row *) MUST_CHECK;
 
 /* "Nm3", "Sm3", "scf", "sccm": what the settings call the family.  */
 const char *reference_family_name (enum reference_family);

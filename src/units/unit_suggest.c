@@ -41,7 +41,8 @@ guess_mistake (const struct unit_table *table, const char *atom, struct guess *g
     const struct unit_entry *entry = &table->entries[i];
     const char *list = entry->mistaken, *piece;
     size_t length;
-    while (!entry->hidden && found < 2 && unit_next_piece (&list, '|', &piece, &length))
+    while (!entry->hidden && !entry->open && found < 2
+           && unit_next_piece (&list, '|', &piece, &length))
       if (length == n && is_same_but_capitals (piece, atom, n))
         guess->word[found++] = entry->row.spelling;
   }
@@ -292,24 +293,43 @@ refuse_unknown (const struct unit_table *table, const char *ascii,
     fault_set (fault, MESSAGE_UNIT_UNKNOWN, ascii, "'list units' shows the units there are");
 }
 
-/* a/b*c: both readings, written out.  The slash that counts is the last one before the star, in
-   the same brackets.                                                                          */
+/* Where the first and the last '/' stand in the product that the '*' at STAR goes on with; a
+   bracket that opens, or the text's start, begins it.                                         */
+static void
+find_slashes (const char *ascii, size_t star, size_t *first, size_t *last)
+{
+  int depth = 0;
+
+  *first = *last = star;
+  for (size_t at = star; at-- > 0;) {
+    depth += ascii[at] == ')' ? 1 : ascii[at] == '(' ? -1 : 0;
+    if (depth < 0)
+      return;
+    if (depth > 0 || ascii[at] != '/')
+      continue;
+    if (*last == star)
+      *last = at;
+    *first = at;
+  }
+}
+
+/* a/b*c: both readings, written out; STAR is where '*' stands.  */
 static const char *
 both_readings (struct arena *arena, const char *ascii, size_t star)
 {
-  size_t slash = star, close = star + 1;
+  size_t first, last, close = star + 1;
   int depth = 0;
 
-  while (slash > 0 && (ascii[--slash] != '/' || depth != 0))
-    depth += ascii[slash] == ')' ? 1 : ascii[slash] == '(' ? -1 : 0;
-  for (depth = 0; ascii[close] != '\0' && (depth > 0 || strchr ("*/)", ascii[close]) == NULL);
-       close++)
+  find_slashes (ascii, star, &first, &last);
+  for (; ascii[close] != '\0' && (depth > 0 || strchr ("*/)", ascii[close]) == NULL); close++)
     depth += ascii[close] == '(' ? 1 : ascii[close] == ')' ? -1 : 0;
-  int before = (int) slash, under = (int) (star - slash - 1), behind = (int) (close - star - 1);
-  const char *a = ascii, *b = ascii + slash + 1, *c = ascii + star + 1, *rest = ascii + close;
-  return arena_format (arena, "a/b*c has two readings: write '%.*s/(%.*s*%.*s)%s' or "
-                       "'%.*s*%.*s/%.*s%s'", before, a, under, b, behind, c, rest,
-                       before, a, behind, c, under, b, rest);
+  const char *c = ascii + star + 1, *rest = ascii + close;
+  int length = (int) (close - star - 1);
+  return arena_format (arena, "a/b*c has two readings: write '%.*s(%.*s*%.*s)%s' or "
+                       "'%.*s*%.*s%.*s%s'",
+                       (int) (last + 1), ascii, (int) (star - last - 1), ascii + last + 1,
+                       length, c, rest,
+                       (int) first, ascii, length, c, (int) (star - first), ascii + first, rest);
 }
 
 void

@@ -294,6 +294,17 @@ unit_table_row (const struct unit_table *table, size_t i)
   return table->shown[i]->row;
 }
 
+bool
+unit_row_find (const struct unit_table *table, const char *spelling, struct unit_row *row)
+{
+  struct unit_word word;
+
+  if (!unit_word_find (table, spelling, strlen (spelling), &word) || word.entry->open)
+    return false;
+  *row = word.entry->row;
+  return true;
+}
+
 /* Does the row take this prefix?  */
 static bool
 takes_prefix (const struct unit_entry *entry, const char *symbol)

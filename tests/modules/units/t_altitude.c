@@ -54,7 +54,7 @@ exponent_follows_from_constants (void)
 static void
 stops_at_its_range (void)
 {
-  static const double heights[] = { -2000.1, 11000.1, 1e300, INFINITY, -INFINITY, NAN };
+  static const double heights[] = { -2000.1, 11000.1, 1e300, HUGE_VAL, -HUGE_VAL, (double) NAN };
   double pressure = 7;
 
   for (size_t i = 0; i < sizeof heights / sizeof heights[0]; i++) {

@@ -68,6 +68,24 @@ mistakes_are_no_units (void)
   fixture_close (&fixture);
 }
 
+static void
+rows_by_spelling (void)
+{
+  struct unit_row row;
+
+  fixture_open (&fixture, NULL);
+  CHECK (unit_row_find (fixture.table, "psi", &row));
+  SAME_TEXT (row.factor, "0.45359237*9.80665/0.0254^2");
+  SAME_TEXT (row.quantity, "pressure");
+  CHECK (unit_row_find (fixture.table, "SCFM", &row));
+  SAME_TEXT (row.spelling, "scfm");
+  CHECK (unit_row_find (fixture.table, "mbar", &row));
+  SAME_TEXT (row.spelling, "bar");
+  CHECK (!unit_row_find (fixture.table, "cfm", &row));
+  CHECK (!unit_row_find (fixture.table, "kg/m3", &row));
+  fixture_close (&fixture);
+}
+
 static char directory[] = "units-XXXXXX";
 static char path[64];
 
@@ -163,6 +181,7 @@ static const struct test_case cases[] = {
   { "every word has one meaning", words_have_one_meaning },
   { "words of the language are no units", words_that_are_none },
   { "mistaken words are no units", mistakes_are_no_units },
+  { "rows are found by spelling", rows_by_spelling },
   { "a user's row adds a unit", users_rows_add },
   { "a user's row replaces one with its aliases", users_rows_replace },
   { "bad rows are refused with file and line", bad_users_rows },
