@@ -86,6 +86,7 @@ rows_by_spelling (void)
   fixture_close (&fixture);
 }
 
+static const char bad_factor[] = "factor_SI is not made of decimals, '*', '/' and '^'";
 static char directory[] = "units-XXXXXX";
 static char path[64];
 
@@ -147,8 +148,8 @@ bad_users_rows (void)
 {
   static const struct { const char *row, *what; } rows[] = {
     { "drum\t\tbeauty\tx\t1\t\t\t\tstores", "no such quantity" },
-    { "drum\t\tvolume\tx\t0,2\t\t\t\tstores", "factor_SI is not made of decimals, '*', '/' and '^'" },
-    { "drum\t\tvolume\tx\t\t\t\t\tstores", "factor_SI is not made of decimals, '*', '/' and '^'" },
+    { "drum\t\tvolume\tx\t0,2\t\t\t\tstores", bad_factor },
+    { "drum\t\tvolume\tx\t\t\t\t\tstores", bad_factor },
     { "drum\t\tvolume\tx\t0\t\t\t\tstores", "factor_SI is zero or too large" },
     { "drum\t\tvolume\tx\t1/0\t\t\t\tstores", "factor_SI is zero or too large" },
     { "drum\t\tvolume\tx\t1e300*1e300\t\t\t\tstores", "factor_SI is zero or too large" },
