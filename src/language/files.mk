@@ -1,14 +1,71 @@
 noinst_LIBRARIES += %D%/liblanguage.a
 
 %C%_liblanguage_a_SOURCES = \
+  %D%/ask.c \
+  %D%/assume.c \
+  %D%/commands/card_gas.c \
+  %D%/commands/card_stream.c \
+  %D%/commands/card_table.c \
+  %D%/commands/command.c \
+  %D%/commands/commands.h \
+  %D%/commands/define.c \
+  %D%/commands/help.c \
+  %D%/commands/list.c \
+  %D%/commands/open.c \
+  %D%/commands/save.c \
+  %D%/commands/set.c \
+  %D%/commands/show.c \
+  %D%/convert.c \
+  %D%/convert.h \
+  %D%/convert_part.c \
+  %D%/convert_quantity.c \
+  %D%/convert_stream.c \
+  %D%/definition.c \
+  %D%/evaluate.c \
+  %D%/evaluate_gas.c \
+  %D%/evaluate_list.c \
+  %D%/evaluate_of.c \
+  %D%/evaluate_property.c \
+  %D%/evaluate_sum.c \
+  %D%/evaluation.h \
+  %D%/flow.c \
+  %D%/flow.h \
+  %D%/names.c \
   %D%/parse.c \
   %D%/parse.h \
+  %D%/parse_block.c \
+  %D%/parse_change.c \
+  %D%/parse_fault.c \
+  %D%/parse_gas.c \
+  %D%/parse_list.c \
+  %D%/parse_name.c \
+  %D%/parse_private.h \
+  %D%/parse_quantity.c \
+  %D%/parse_set.c \
+  %D%/parse_state.c \
+  %D%/parse_statement.c \
+  %D%/parse_sum.c \
+  %D%/parse_target.c \
+  %D%/parse_token.c \
+  %D%/parse_trim.c \
+  %D%/parse_unit.c \
   %D%/properties.def \
+  %D%/scan.c \
+  %D%/scan.h \
   %D%/session.c \
   %D%/session.h \
+  %D%/session_private.h \
   %D%/settings.c \
   %D%/settings.def \
   %D%/settings.h \
+  %D%/state.c \
   %D%/statements.def \
+  %D%/topics.def \
   %D%/tree.h \
+  %D%/undo.c \
+  %D%/value.c \
+  %D%/value.h \
+  %D%/volume.c \
+  %D%/wording.c \
+  %D%/wording.h \
   %D%/words.def

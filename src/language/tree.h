@@ -36,7 +36,7 @@ enum node_kind {
                           in place of the number: q m3/h */
   NODE_NAME,           /* text (a name, a component, a multi-word component as typed) */
   NODE_SITE_PRESSURE,
-  NODE_PROPERTY,       /* property; only as `a` of NODE_OF */
+  NODE_PROPERTY,       /* property, text; only as `a` of NODE_OF */
   NODE_THAT,
   /* Chains.  */
   NODE_OF,             /* a of b; a: NODE_PROPERTY, NODE_QUANTITY, NODE_NAME or a bracketed sum */
@@ -118,7 +118,7 @@ enum statement_kind {
   /* Lines of a block.  */
   STATEMENT_MIX, STATEMENT_SEPARATE, STATEMENT_SPLIT, STATEMENT_REACT, STATEMENT_COMPONENTS,
   STATEMENT_KNOWN, STATEMENT_FIGURE, STATEMENT_END,
-  STATEMENT_EMPTY                 /* a comment */
+  STATEMENT_EMPTY                 /* never made by the parser, which passes comments over */
 };
 
 enum comparison { COMPARE_EQUAL, COMPARE_AT_LEAST, COMPARE_AT_MOST };
@@ -135,18 +135,23 @@ struct statement {
   const char *name;               /* what is defined, solved, shown ... */
   struct place name_at;
   const struct node *names;       /* NODE_NAMEs of forget, trim, components */
-  const struct node *value;       /* the sum, list, chain or state */
+  const struct node *value;       /* the sum, list, chain or state; of normalise the whole
+                                     NODE_NORMALISED; of gas from a NODE_LIST without items that
+                                     has the basis, or null; of a setting its figure */
   struct target *targets;
   const char *text, *sample;      /* a text in quotes: file names */
   struct place text_at;
   const struct stated_property *stated;          /* gas NAME with ... */
   /* set */
   bool has_setting; enum setting setting; const char *setting_words;
-  const struct unit *setting_unit; struct place setting_at;    /* set scf at ...; `at` of the value */
-  /* show and help of a unit or a property; help words */
+  /* set scf at ...; the place of the value, or of the setting's name where it has none.
+     setting_words is the value as it is listed: "ISO 6976:2016".  */
+  const struct unit *setting_unit; struct place setting_at;
+  /* show: all that the words can be, name, unit and property; then help's words */
   const struct unit *unit; bool has_property; enum property property;
   const char *help_words;
-  /* check, trim, known, figure: value is the computed side */
+  /* check, known, figure: the stated side, a NODE_QUANTITY or NODE_AT over one (of known a sum);
+     value is the computed side.  `check NAME` has a name and no value.  */
   const struct node *claim;
   const struct aim *aims; enum optimum optimum; const struct node *least;
   /* boundaries */
