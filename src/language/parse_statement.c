@@ -143,19 +143,25 @@ parse_file (struct parser *p, struct statement *statement)
   return expect_text (p, &statement->text, form) && expect_end (p, form);
 }
 
-/* "help" { WORD }  */
+/* "help" { WORD }; the words are kept with one blank where blanks were  */
 static bool
 parse_help (struct parser *p, struct statement *statement)
 {
-  size_t start = p->token.start;
+  const char *text = p->scan.text;
+  size_t start = p->token.start, n = 0;
   if (at_end (p))
     return true;
-  while (!at_end (p)) {
-    if (p->token.kind == TOKEN_BAD)
+  char *words = ARENA_ARRAY (p->arena, p->scan.n - start + 1, char);
+  for (; !at_end (p); token_take (p)) {
+    const struct token *t = &p->token;
+    if (t->kind == TOKEN_BAD)
       return fail_here (p, MESSAGE_WORD_UNEXPECTED, NULL, NULL);
-    token_take (p);
+    if (t->blank && n > 0)
+      words[n++] = ' ';
+    memcpy (words + n, text + t->start, t->end - t->start);
+    n += t->end - t->start;
   }
-  statement->help_words = arena_copy (p->arena, p->scan.text + start, p->end - start);
+  statement->help_words = words;
   return true;
 }
 

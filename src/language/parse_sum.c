@@ -77,6 +77,10 @@ parse_function (struct parser *p, enum node_kind kind)
     return NULL;
   }
   node->a = parse_bracket (p, IN_SUM);
+  if (node->a != NULL) {        /* a fault in it points behind the bracket */
+    node->a->at.first++;
+    node->a->at.last--;
+  }
   node_close (p, node);
   return node->a != NULL ? node : NULL;
 }
@@ -341,9 +345,12 @@ parse_binary (struct parser *p, int least)
          && strength > 0) {
     if (!add_link (p))
       return NULL;
+    struct place sign = p->token.at;
     token_take (p);
     struct node *right = parse_binary (p, strength + 1);
     left = right != NULL ? node_link (p, kind, left, right) : NULL;
+    if (left != NULL)
+      left->sign_at = sign;
   }
   return left;
 }

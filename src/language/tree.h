@@ -92,6 +92,7 @@ struct node {
   const struct unit *unit;
   const char *unit_text;          /* the unit as read: blanks closed up, twins made ASCII */
   struct place unit_at;
+  struct place sign_at;           /* of NODE_ADD to NODE_DIVIDE: where the sign stands */
   unsigned words;
   const struct spread *spread;
   bool rest, below;               /* of NODE_PART */

@@ -121,7 +121,8 @@ find_toxic (const struct composition *c, struct hazard found[], size_t room)
   size_t count = 0;
   for (size_t i = 0; i < c->count; i++) {
     double limit = c->species[i]->exposure_limit;
-    if (limit > 0 && c->fraction[i] >= limit)            /* NAN: no limit known */
+    bool toxic = strstr (c->species[i]->flags, "toxic") != NULL;
+    if (toxic && limit > 0 && c->fraction[i] >= limit)   /* NAN: no limit known */
       count = insert_worst (found, count, room,
                             (struct hazard) { HAZARD_TOXIC, c->species[i],
                                               c->fraction[i] / limit, limit });

@@ -1,0 +1,89 @@
+#include "config.h"
+#include "language/commands/commands.h"
+
+#include <string.h>
+#include "result/result.h"
+#include "support/fault.h"
+
+static const char *const statement_word[] = {
+  "",
+#define STATEMENT(name, text, help) text,
+#include "language/statements.def"
+#undef STATEMENT
+};
+
+/* Statements of the language that this version reads and does not run.  */
+static bool
+only_read (struct session *session, const struct statement *s, struct fault *fault)
+{
+  if (s->kind == STATEMENT_SOLVE && s->name && !name_find (session, s->name, strlen (s->name))) {
+    struct evaluation ev;
+    struct node name = { .kind = NODE_NAME, .text = s->name, .at = s->name_at };
+    evaluation_init (&ev, session, NULL, fault);
+    return name_unknown (&ev, &name);
+  }
+  bool named = s->kind < sizeof statement_word / sizeof statement_word[0];
+  fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->at,
+                named ? statement_word[s->kind] : "balances and sheets", NULL);
+  return false;
+}
+
+static bool
+quit (struct result *result)
+{
+  result->quit = true;
+  return true;
+}
+
+bool
+command_run (struct session *session, const struct statement *s, struct result *result,
+             struct fault *fault)
+{
+  switch (s->kind) {
+  case STATEMENT_GAS:
+  case STATEMENT_STREAM:
+  case STATEMENT_LET:
+  case STATEMENT_REFERENCE:
+    return command_define (session, s, result, fault);
+  case STATEMENT_NORMALISE:
+    return command_normalise (session, s, result, fault);
+  case STATEMENT_SET:
+    return command_set (session, s, result, fault);
+  case STATEMENT_SHOW:
+    return command_show (session, s, result, fault);
+  case STATEMENT_LIST:
+    return command_list (session, s, result, fault);
+  case STATEMENT_FORGET:
+    return command_forget (session, s, result, fault);
+  case STATEMENT_SAVE:
+    return command_save (session, s, result, fault);
+  case STATEMENT_OPEN:
+    return command_open (session, s, result, fault);
+  case STATEMENT_HELP:
+    return command_help (session, s, result, fault);
+  case STATEMENT_UNDO:
+    return command_undo (session, s, result, fault);
+  case STATEMENT_QUIT:
+    return quit (result);
+  case STATEMENT_EMPTY:
+    return true;
+  case STATEMENT_ASK:
+  case STATEMENT_BALANCE:
+  case STATEMENT_SOLVE:
+  case STATEMENT_SHEET:
+  case STATEMENT_CHECK:
+  case STATEMENT_TRIM:
+  case STATEMENT_NOTE:
+  case STATEMENT_WORKINGS:
+  case STATEMENT_MIX:
+  case STATEMENT_SEPARATE:
+  case STATEMENT_SPLIT:
+  case STATEMENT_REACT:
+  case STATEMENT_COMPONENTS:
+  case STATEMENT_KNOWN:
+  case STATEMENT_FIGURE:
+  case STATEMENT_END:
+    break;
+  }
+  return only_read (session, s, fault);
+}

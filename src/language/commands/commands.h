@@ -1,0 +1,49 @@
+/* Statements that are no questions: one handler each, one file each.
+
+   A handler reads its statement, calls what does the work and fills the result; it changes the
+   session only when it succeeds.                                                                */
+#ifndef LANGUAGE_COMMANDS_COMMANDS_H
+#define LANGUAGE_COMMANDS_COMMANDS_H
+
+#include <stdbool.h>
+#include "language/session_private.h"
+#include "support/check.h"
+
+struct card; struct gas_value; struct reference; struct species; struct stream; struct unit;
+
+typedef bool command (struct session *, const struct statement *, struct result *,
+                      struct fault *);
+
+/* Runs any statement but a question.  Kind not-available for those this version only reads.  */
+bool command_run (struct session *, const struct statement *, struct result *, struct fault *)
+  MUST_CHECK;
+
+command command_define, command_normalise, command_set, command_show, command_list,
+  command_forget, command_save, command_open, command_help, command_undo;
+
+/* The cards of `show` (card_*.c).  */
+bool card_of_gas (struct session *, const struct gas_value *, const char *name,
+                  struct result *, struct fault *) MUST_CHECK;
+bool card_of_stream (struct session *, const struct stream *, const char *name,
+                     struct result *, struct fault *) MUST_CHECK;
+bool card_of_quantity (struct session *, const struct statement *, struct definition *,
+                       struct result *, struct fault *) MUST_CHECK;
+void card_of_species (struct session *, const struct species *, struct result *);
+bool card_of_unit (struct session *, const struct unit *, struct result *, struct fault *)
+  MUST_CHECK;
+void card_of_reference (struct session *, const struct reference *, struct result *);
+void card_of_state (struct session *, const struct definition *, struct result *);
+void card_of_property (struct session *, enum property, struct result *);
+/* All settings, or only ONE.  */
+void card_of_settings (struct session *, const enum setting *one, struct result *);
+void card_add_figure (struct result *, struct card *, const char *name, double value,
+                      const char *unit, const char *basis);
+
+/* A session as plain statements, settings first, in an order that can be run again (save.c).  */
+struct text;
+void session_write (const struct session *, struct text *);
+
+/* "gas model".  */
+const char *setting_name (enum setting);
+
+#endif

@@ -1,0 +1,67 @@
+#include "config.h"
+#include "language/commands/commands.h"
+
+#include <string.h>
+#include "result/result.h"
+#include "support/arena.h"
+#include "support/fault.h"
+
+bool
+command_define (struct session *session, const struct statement *s, struct result *result,
+                struct fault *fault)
+{
+  enum name_kind kind = s->kind == STATEMENT_GAS ? NAME_GAS
+                        : s->kind == STATEMENT_STREAM ? NAME_STREAM
+                        : s->kind == STATEMENT_LET ? NAME_QUANTITY : NAME_REFERENCE;
+  return name_define (session, s, s->source, kind, result, fault);
+}
+
+/* The formula of a definition: what stands behind its `=`.  */
+static const char *
+formula_of (const struct definition *d)
+{
+  const char *equals = strchr (d->source, '=');
+  return equals ? equals + 1 : "";
+}
+
+/* `normalise lab into N2` is `gas lab = (its formula) normalised into N2`.  */
+bool
+command_normalise (struct session *session, const struct statement *s, struct result *result,
+                   struct fault *fault)
+{
+  struct definition *d = name_find (session, s->name, strlen (s->name));
+  if (!d || d->kind != NAME_GAS) {
+    struct node name = { .kind = NODE_NAME, .text = s->name, .at = s->name_at };
+    struct evaluation ev;
+    evaluation_init (&ev, session, NULL, fault);
+    return d ? fault_set_at (fault, MESSAGE_KIND_WRONG, s->name_at,
+                             "only a gas can be normalised", NULL)
+             : name_unknown (&ev, &name);
+  }
+  const struct node *into = s->value->b;
+  bool list = d->statement->value && d->statement->value->kind == NODE_LIST;
+  const char *source = arena_format (result->arena, "gas %.*s = %s%s%s normalised%s%s",
+                                     (int) (s->name_at.last - s->name_at.first + 1), s->name,
+                                     list ? "(" : "", formula_of (d), list ? ")" : "",
+                                     into ? " into " : "", into ? into->text : "");
+  return name_define (session, s, source, NAME_GAS, result, fault);
+}
+
+bool
+command_forget (struct session *session, const struct statement *s, struct result *result,
+                struct fault *fault)
+{
+  (void) result;
+  return name_forget (session, s->names, fault);
+}
+
+bool
+command_undo (struct session *session, const struct statement *s, struct result *result,
+              struct fault *fault)
+{
+  if (undo_last (session, result, fault)) {
+    return true;
+  }
+  fault_place (fault, s->at);
+  return false;
+}

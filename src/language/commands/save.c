@@ -1,0 +1,106 @@
+#include "config.h"
+#include "language/commands/commands.h"
+
+#include <errno.h>
+#include <stdio.h>
+#include <string.h>
+#include <sys/stat.h>
+#include <unistd.h>
+#include "result/result.h"
+#include "support/arena.h"
+#include "support/fault.h"
+#include "support/text.h"
+
+/* One statement on one line: line breaks become blanks, remarks inside are left out.  */
+static void
+add_statement (struct text *out, const char *source)
+{
+  bool quoted = false, remark = false;
+  for (const char *s = source; *s; s++) {
+    quoted = *s == '"' && !remark ? !quoted : quoted;
+    remark = *s == '\n' ? false : remark || (*s == '#' && !quoted);
+    if (*s == '\n') {
+      text_add_char (out, ' ');
+    } else if (!remark) {
+      text_add_char (out, *s);
+    }
+  }
+  text_add_char (out, '\n');
+}
+
+/* A definition behind those it needs.  WRITTEN marks the ones done.  */
+static void
+add_definition (const struct session *s, size_t i, bool written[], struct text *out)
+{
+  const struct definition *d = s->order[i];
+  written[i] = true;
+  for (size_t k = 0; k < s->count; k++)
+    for (size_t n = 0; !written[k] && n < d->need_count; n++)
+      if (strcmp (s->order[k]->name, d->needs[n]) == 0) {
+        add_definition (s, k, written, out);
+      }
+  add_statement (out, d->source);
+}
+
+void
+session_write (const struct session *s, struct text *out)
+{
+  struct arena *arena = arena_create ();
+  bool *written = ARENA_ARRAY (arena, s->count, bool);
+  for (int i = 0; i < SETTING_COUNT; i++)
+    if (s->settings.source[i]) {
+      add_statement (out, s->settings.source[i]);
+    }
+  /* A family may be set at reference conditions that have a name: those come first.  */
+  for (size_t i = 0; i < s->count; i++)
+    if (s->order[i]->kind == NAME_REFERENCE && !written[i]) {
+      add_definition (s, i, written, out);
+    }
+  for (int i = 0; i < FAMILY_COUNT; i++)
+    if (s->settings.family[i].source) {
+      add_statement (out, s->settings.family[i].source);
+    }
+  for (size_t i = 0; i < s->count; i++)
+    if (!written[i]) {
+      add_definition (s, i, written, out);
+    }
+  arena_destroy (arena);
+}
+
+/* Written beside the target and renamed, so that a file is whole or as it was.  */
+static bool
+write_file (const char *path, const struct text *text, struct arena *arena)
+{
+  const char *beside = arena_format (arena, "%s.%ld.part", path, (long) getpid ());
+  FILE *file = fopen (beside, "w");
+  if (!file) {
+    return false;
+  }
+  bool done = fwrite (text->bytes, 1, text->length, file) == text->length;
+  done = fflush (file) == 0 && done;
+  done = fclose (file) == 0 && done;
+  if (!done || rename (beside, path) != 0) {
+    int reason = errno;
+    (void) remove (beside);
+    errno = reason;
+    return false;
+  }
+  return true;
+}
+
+bool
+command_save (struct session *session, const struct statement *s, struct result *result,
+              struct fault *fault)
+{
+  struct text text;
+  text_init (&text);
+  text_add (&text, "# gaswright\n");
+  session_write (session, &text);
+  bool done = write_file (s->text, &text, result->arena);
+  text_clear (&text);
+  if (!done) {
+    return fault_set_at (fault, MESSAGE_FILE, s->text_at, s->text, strerror (errno));
+  }
+  result_remark (result, MESSAGE_NOTE_SAVED, s->text, NULL);
+  return true;
+}

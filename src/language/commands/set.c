@@ -1,0 +1,235 @@
+#include "config.h"
+#include "language/commands/commands.h"
+
+#include <math.h>
+#include <string.h>
+#include "language/wording.h"
+#include "result/result.h"
+#include "support/arena.h"
+#include "support/fault.h"
+#include "units/altitude.h"
+
+static const char *const names[] = {
+#define SETTING(name, text, takes) text,
+#include "language/settings.def"
+#undef SETTING
+};
+
+const char *
+setting_name (enum setting setting)
+{
+  return names[setting];
+}
+
+/* What a change of a setting may move.  */
+static unsigned
+touch_of (enum setting setting)
+{
+  switch (setting) {
+  case SETTING_GAS_MODEL: return TOUCH_MODEL;
+  case SETTING_SITE_PRESSURE:
+  case SETTING_SITE_ALTITUDE: return TOUCH_SITE;
+  case SETTING_REFERENCE_VOLUMES: return TOUCH_VOLUMES;
+  case SETTING_OXYGEN_IN_AIR: return TOUCH_OXYGEN;
+  case SETTING_TOTAL_TOLERANCE: return TOUCH_TOLERANCE;
+  case SETTING_BELOW_DETECTION: return TOUCH_BELOW;
+  case SETTING_COMBUSTION:
+  case SETTING_CALORIFIC_VALUES:
+  case SETTING_DIGITS:
+  case SETTING_COUNT: break;
+  }
+  return 0;
+}
+
+/* The statement read again into memory that lasts, so that its trees and texts last.  */
+static const struct statement *
+keep_statement (struct session *session, const struct statement *s, struct fault *fault)
+{
+  char *source = arena_string (session->arena, s->source);
+  struct parser *parser = parser_create (session->arena, &session->vocabulary, source,
+                                         strlen (source), 1, BLOCK_NONE);
+  struct statement *kept;
+  return parser_next (parser, &kept, fault) ? kept : NULL;
+}
+
+static bool
+set_words (const struct statement *s, struct settings *new, struct fault *fault)
+{
+  const char *word = s->setting_words;
+  bool *is_set = &new->is_set[s->setting];
+  switch (s->setting) {
+  case SETTING_GAS_MODEL:
+    for (int m = 0; m < GAS_MODEL_COUNT; m++)
+      if (strcmp (word, gas_model_name ((enum gas_model) m)) == 0) {
+        new->model = (enum gas_model) m;
+      }
+    *is_set = new->model != GAS_MODEL_AUTO;
+    return new->model == GAS_MODEL_AUTO || gas_model_equation (new->model)
+           || fault_set_at (fault, MESSAGE_MODEL_ABSENT, s->at, word, NULL);
+  case SETTING_REFERENCE_VOLUMES:
+    new->real_volumes = strcmp (word, "real") == 0;
+    *is_set = new->real_volumes;
+    return true;
+  case SETTING_BELOW_DETECTION:
+    new->below = strcmp (word, "zero") == 0 ? BELOW_ZERO
+                 : strcmp (word, "half") == 0 ? BELOW_HALF : BELOW_LIMIT;
+    *is_set = true;
+    return true;
+  case SETTING_CALORIFIC_VALUES:
+    return fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->at, "calorific values", NULL);
+  case SETTING_SITE_PRESSURE:
+  case SETTING_SITE_ALTITUDE:
+  case SETTING_OXYGEN_IN_AIR:
+  case SETTING_TOTAL_TOLERANCE:
+  case SETTING_COMBUSTION:
+  case SETTING_DIGITS:
+  case SETTING_COUNT:
+    break;
+  }
+  return fault_set_at (fault, MESSAGE_SETTING_VALUE, s->at, names[s->setting], NULL);
+}
+
+static bool
+out_of_range (const struct statement *s, struct fault *fault, const char *why)
+{
+  return fault_set_at (fault, MESSAGE_SETTING_VALUE, s->value->at, names[s->setting], why);
+}
+
+static bool
+set_barometer (const struct statement *s, double si, struct settings *new, struct fault *fault)
+{
+  bool altitude = s->setting == SETTING_SITE_ALTITUDE;
+  double pressure = si;
+  if (altitude && !altitude_pressure (si, &pressure, fault)) {
+    fault_place (fault, s->value->at);
+    return false;
+  }
+  if (!(pressure > 0)) {
+    return out_of_range (s, fault, "a barometer is above zero");
+  }
+  new->site_pressure = pressure;
+  new->site_pressure_spread = altitude ? NULL : s->value->spread;
+  new->site_altitude = altitude ? si : UNSTATED;
+  new->site_altitude_text = altitude ? strstr (s->source, s->value->figure) : NULL;
+  new->is_set[SETTING_SITE_PRESSURE] = !altitude;
+  new->is_set[SETTING_SITE_ALTITUDE] = altitude;
+  return true;
+}
+
+static bool
+set_figure (struct session *session, const struct statement *s, struct settings *new,
+            struct fault *fault)
+{
+  struct evaluation ev;
+  struct value v;
+  evaluation_init (&ev, session, NULL, fault);
+  if (!evaluate_quantity (&ev, s->value, &v)) {
+    return false;
+  }
+  new->is_set[s->setting] = true;
+  switch (s->setting) {
+  case SETTING_SITE_PRESSURE:
+  case SETTING_SITE_ALTITUDE:
+    return set_barometer (s, v.si, new, fault);
+  case SETTING_OXYGEN_IN_AIR:
+    new->oxygen_in_air = v.si;
+    return (v.si > 0 && v.si < 1)
+           || out_of_range (s, fault, "oxygen in air lies between 0 and 100 mol%");
+  case SETTING_TOTAL_TOLERANCE:
+    new->total_tolerance = v.si;
+    return (v.si >= 0 && v.si <= 0.1)
+           || out_of_range (s, fault, "a tolerance lies between 0 and 10 %");
+  case SETTING_DIGITS:
+    new->digits = (int) v.si;
+    return true;
+  case SETTING_COMBUSTION:
+    return fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->at, "calorific values", NULL);
+  case SETTING_GAS_MODEL:
+  case SETTING_REFERENCE_VOLUMES:
+  case SETTING_BELOW_DETECTION:
+  case SETTING_CALORIFIC_VALUES:
+  case SETTING_COUNT:
+    break;
+  }
+  return out_of_range (s, fault, "this setting takes a word");
+}
+
+/* `set scf at 60 degF, 14.73 psia`.  */
+static bool
+set_family (struct session *session, const struct statement *s, struct settings *new,
+            struct result *result, struct fault *fault)
+{
+  struct evaluation ev;
+  struct state state;
+  struct place behind = s->value->at;
+  behind.first = behind.last = behind.last + 1;
+  evaluation_init (&ev, session, NULL, fault);
+  if (!evaluate_state (&ev, s->value, &state)) {
+    return false;
+  }
+  if (isnan (state.T) || isnan (state.p)) {
+    return fault_set_at (fault, MESSAGE_STATE_MISSING, behind, s->setting_unit->spelling,
+                         "reference conditions are a temperature and a pressure");
+  }
+  if (state.moisture != MOISTURE_NONE && state.moisture != MOISTURE_DRY) {
+    result_remark (result, MESSAGE_NOTE_HUMIDITY_LEFT_OUT, s->setting_unit->spelling, NULL);
+  }
+  bool customary = s->setting_unit->family == FAMILY_SCF;
+  new->family[s->setting_unit->family] = (struct family_setting) {
+    .at = { state.T, state.p, UNSTATED }, .set = true, .source = s->source,
+    .text = arena_format (session->arena, "%s, %s",
+                          temperature_text (session->arena, state.T, customary),
+                          customary ? pressure_text (session->arena, state.p, true)
+                                    : arena_format (session->arena, "%s kPa",
+                                                    figure_text (session->arena, state.p / 1000)))
+  };
+  return true;
+}
+
+static void
+say_what_moves (struct session *session, unsigned bits, struct result *result)
+{
+  const char *moved = names_touching (session, result->arena, bits);
+  if (moved) {
+    result_remark (result, MESSAGE_NOTE_MOVED, moved, NULL);
+  }
+}
+
+bool
+command_set (struct session *session, const struct statement *typed, struct result *result,
+             struct fault *fault)
+{
+  bool shows = !typed->setting_words && !typed->value;
+  if (shows) {
+    card_of_settings (session, typed->has_setting ? &typed->setting : NULL, result);
+    return true;
+  }
+  struct settings before = session->settings, new = before;
+  /* Faults point into the line as typed; what is kept is read again.  */
+  bool done = typed->setting_unit ? set_family (session, typed, &new, result, fault)
+              : typed->setting_words ? set_words (typed, &new, fault)
+                                     : set_figure (session, typed, &new, fault);
+  const struct statement *s = done ? keep_statement (session, typed, fault) : NULL;
+  if (!s) {
+    return false;
+  }
+  new = before;
+  done = s->setting_unit ? set_family (session, s, &new, result, fault)
+         : s->setting_words ? set_words (s, &new, fault) : set_figure (session, s, &new, fault);
+  if (!done) {
+    return false;
+  }
+  unsigned bits = s->setting_unit ? touch_family (s->setting_unit->family) : touch_of (s->setting);
+  if (s->has_setting) {
+    bool altitude = s->setting == SETTING_SITE_ALTITUDE;
+    new.source[s->setting] = new.is_set[s->setting] ? s->source : NULL;
+    if (altitude || s->setting == SETTING_SITE_PRESSURE) {
+      new.source[altitude ? SETTING_SITE_PRESSURE : SETTING_SITE_ALTITUDE] = NULL;
+    }
+  }
+  session->settings = new;
+  session->version++;
+  undo_note (session, NULL, NULL, NULL, 0, &before);
+  say_what_moves (session, bits, result);
+  return true;
+}

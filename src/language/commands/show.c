@@ -1,0 +1,95 @@
+#include "config.h"
+#include "language/commands/commands.h"
+
+#include <string.h>
+#include "gas/air.h"
+#include "gas/composition.h"
+#include "gas/reference.h"
+#include "gas/species.h"
+#include "result/result.h"
+#include "support/arena.h"
+#include "support/fault.h"
+
+/* The card of one of the user's names.  */
+static bool
+show_definition (struct session *session, const struct statement *s, struct definition *d,
+                 struct result *result, struct fault *fault)
+{
+  if (d->version != session->version && !definition_refresh (session, d, fault)) {
+    fault->at = s->name_at;
+    return false;
+  }
+  definition_tell (session, d, true, result);
+  switch (d->kind) {
+  case NAME_GAS:
+    return card_of_gas (session, d->value.gas, d->name, result, fault);
+  case NAME_STREAM:
+    return card_of_stream (session, &d->value.stream, d->name, result, fault);
+  case NAME_QUANTITY:
+    return card_of_quantity (session, s, d, result, fault);
+  case NAME_REFERENCE:
+    card_of_state (session, d, result);
+    return true;
+  }
+  return false;
+}
+
+static bool
+show_air (struct session *session, struct result *result, struct fault *fault)
+{
+  struct gas_value air = { .name = "air", .closed = session->air, .scaled = 1 };
+  return card_of_gas (session, &air, "air", result, fault);
+}
+
+static bool
+unknown (struct session *session, const struct statement *s, struct fault *fault)
+{
+  struct evaluation ev;
+  struct node name = { .kind = NODE_NAME, .text = s->name, .at = s->name_at };
+  evaluation_init (&ev, session, NULL, fault);
+  return name_unknown (&ev, &name);
+}
+
+bool
+command_show (struct session *session, const struct statement *s, struct result *result,
+              struct fault *fault)
+{
+  size_t n = s->name ? strlen (s->name) : 0;
+  struct definition *d = s->name ? name_find (session, s->name, n) : NULL;
+  const struct species *species = NULL;
+  const struct reference *reference = NULL;
+  const char *candidates = NULL;
+  if (d) {
+    return show_definition (session, s, d, result, fault);
+  }
+  if (s->has_property) {
+    card_of_property (session, s->property, result);
+    return true;
+  }
+  if (s->name && air_is_name (s->name, n)) {
+    return show_air (session, result, fault);
+  }
+  enum species_match match = s->name ? species_find (session->vocabulary.species, s->name, n,
+                                                     &species, &candidates) : SPECIES_NONE;
+  if (match == SPECIES_KEY || match == SPECIES_SYNONYM
+      || (match == SPECIES_PLAIN_FORMULA && !s->unit)) {
+    card_of_species (session, species, result);
+    return true;
+  }
+  if (s->unit) {
+    return card_of_unit (session, s->unit, result, fault);
+  }
+  if (match == SPECIES_AMBIGUOUS) {
+    return fault_set_at (fault, MESSAGE_NAME_OPEN, s->name_at, s->name, candidates);
+  }
+  switch (reference_find (session->references, s->name, n, &reference, &candidates)) {
+  case REFERENCE_ONE:
+    card_of_reference (session, reference, result);
+    return true;
+  case REFERENCE_AMBIGUOUS:
+    return fault_set_at (fault, MESSAGE_NAME_OPEN, s->name_at, s->name, candidates);
+  case REFERENCE_NONE:
+    break;
+  }
+  return unknown (session, s, fault);
+}

@@ -1,0 +1,411 @@
+#include "config.h"
+#include "language/session_private.h"
+
+#include <math.h>
+#include <string.h>
+#include "gas/composition.h"
+#include "gas/species.h"
+#include "language/wording.h"
+#include "property/hazard.h"
+#include "result/result.h"
+#include "support/arena.h"
+#include "support/fault.h"
+
+/* ---- Life ---- */
+
+struct name_list { struct arena *arena; const char **at; size_t count, room; };
+
+static void
+collect_name (const struct node *node, void *with)
+{
+  struct name_list *list = with;
+  if (node->kind != NODE_NAME && node->kind != NODE_PART && node->kind != NODE_SHARE) {
+    return;
+  }
+  for (size_t i = 0; i < list->count; i++)
+    if (strcmp (list->at[i], node->text) == 0) {
+      return;
+    }
+  if (list->count == list->room) {
+    size_t room = list->room ? 2 * list->room : 8;
+    const char **more = ARENA_ARRAY (list->arena, room, const char *);
+    if (list->count) {
+      memcpy (more, list->at, list->count * sizeof *more);
+    }
+    list->at = more;
+    list->room = room;
+  }
+  list->at[list->count++] = node->text;
+}
+
+struct definition *
+definition_make (struct session *session, const char *source, enum name_kind kind,
+                 struct fault *fault)
+{
+  struct arena *arena = arena_create ();
+  struct definition *d = ARENA_NEW (arena, struct definition);
+  struct statement *statement;
+  d->arena = arena;
+  d->kind = kind;
+  d->source = arena_string (arena, source);
+  struct parser *parser = parser_create (arena, &session->vocabulary, d->source,
+                                         strlen (d->source), 1, BLOCK_NONE);
+  if (!parser_next (parser, &statement, fault)) {
+    arena_destroy (arena);
+    return NULL;
+  }
+  struct name_list needs = { arena, NULL, 0, 0 };
+  tree_visit (statement, collect_name, &needs);
+  d->statement = statement;
+  d->name = statement->name;
+  d->needs = needs.at;
+  d->need_count = needs.count;
+  d->cache = arena_create ();
+  d->holders = 1;
+  return d;
+}
+
+void
+definition_hold (struct definition *d)
+{
+  if (d) {
+    d->holders++;
+  }
+}
+
+void
+definition_release (struct definition *d)
+{
+  if (d && --d->holders == 0) {
+    arena_destroy (d->cache);
+    arena_destroy (d->arena);
+  }
+}
+
+/* ---- Working it out ---- */
+
+static bool
+stated_gas (struct evaluation *ev, const struct statement *s, struct value *out)
+{
+  double molar_mass = UNSTATED;
+  for (const struct stated_property *p = s->stated; p; p = p->next) {
+    struct value v;
+    if (!evaluate_quantity (ev, p->quantity, &v)) {
+      return false;
+    }
+    if (p->property != PROPERTY_MOLAR_MASS) {
+      return fault_set_at (ev->fault, MESSAGE_NOT_AVAILABLE, p->quantity->at,
+                           "gases by more than their molar mass", NULL);
+    }
+    if (!dimension_equal (v.measure.dimension, DIMENSION_MOLAR_MASS) || !(v.si > 0)) {
+      return fault_set_at (ev->fault, MESSAGE_UNIT_MISMATCH, p->quantity->at,
+                           "a molar mass is a figure in g/mol above zero", NULL);
+    }
+    molar_mass = v.si;
+  }
+  const struct species *species = species_stated (ev->session->vocabulary.species, s->name,
+                                                  molar_mass);
+  *out = value_number (UNSTATED);
+  out->kind = VALUE_GAS;
+  out->gas = gas_of_composition (ev, composition_pure (ev->arena, species), s->name);
+  note (ev, MESSAGE_NOTE_STATED_ONLY, s->name, "its molar mass", NULL);
+  return out->gas != NULL;
+}
+
+static bool
+gas_body (struct evaluation *ev, const struct statement *s, struct value *out)
+{
+  if (s->text) {
+    return fault_set_at (ev->fault, MESSAGE_NOT_AVAILABLE, s->text_at, "analyses from files",
+                         NULL);
+  }
+  if (s->stated) {
+    return stated_gas (ev, s, out);
+  }
+  if (!evaluate (ev, s->value, NULL, out)) {
+    return false;
+  }
+  if (out->kind != VALUE_GAS) {
+    return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, s->value->at,
+                         "a gas is a list of parts, or made from another gas", NULL);
+  }
+  struct gas_value *gas = ARENA_NEW (ev->arena, struct gas_value);
+  *gas = *out->gas;
+  gas->name = s->name;
+  out->gas = gas;
+  return true;
+}
+
+static bool
+stream_body (struct evaluation *ev, const struct statement *s, struct value *out)
+{
+  if (!evaluate (ev, s->value, NULL, out)) {
+    return false;
+  }
+  if (out->kind == VALUE_STREAM) {
+    return true;
+  }
+  fault_set_at (ev->fault, MESSAGE_KIND_WRONG, s->value->at,
+                out->kind == VALUE_GAS ? "a gas without an amount is no stream"
+                                       : "a stream is a flow or an amount of a gas", NULL);
+  fault_hint (ev->fault, "stream %s = 850 Nm3/h of GAS at T, P", s->name);
+  return false;
+}
+
+static bool
+let_body (struct evaluation *ev, const struct statement *s, struct value *out)
+{
+  if (!evaluate (ev, s->value, NULL, out)) {
+    return false;
+  }
+  if (s->targets) {
+    struct figures figures = { NULL, 0, 0 };
+    struct subject subject = { s->name, s->value->at };
+    if (!convert_value (ev, out, s->targets, &subject, &figures)) {
+      return false;
+    }
+    if (figures.count != 1) {
+      return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, s->value->at,
+                           "a let holds one figure", NULL);
+    }
+    *out = value_number (figures.at[0].value);
+    out->unit = figures.at[0].unit;
+    if (out->unit) {
+      out->si = unit_to_si (out->unit, out->si);
+      out->measure = measure_of_unit (out->unit);
+    }
+    return true;
+  }
+  if (out->kind == VALUE_GAS || out->kind == VALUE_STREAM) {
+    fault_set_at (ev->fault, MESSAGE_KIND_WRONG, s->value->at,
+                  out->kind == VALUE_GAS ? "a let holds a figure, not a gas"
+                                         : "a let holds a figure, not a stream", NULL);
+    fault_hint (ev->fault, "%s %s = ...", out->kind == VALUE_GAS ? "gas" : "stream", s->name);
+    return false;
+  }
+  return true;
+}
+
+static bool
+reference_body (struct evaluation *ev, const struct statement *s, struct state *state)
+{
+  if (!evaluate_state (ev, s->value, state)) {
+    return false;
+  }
+  if (isnan (state->T) || isnan (state->p)) {
+    struct place behind = s->value->at;
+    behind.first = behind.last = behind.last + 1;
+    return fault_set_at (ev->fault, MESSAGE_STATE_MISSING, behind,
+                         "a reference",
+                         "reference conditions are a temperature and a pressure");
+  }
+  return true;
+}
+
+static bool
+body (struct evaluation *ev, const struct definition *d, struct value *out, struct state *state)
+{
+  bool done = false;
+  ev->subject = d->name;
+  switch (d->kind) {
+  case NAME_GAS:
+    done = gas_body (ev, d->statement, out);
+    break;
+  case NAME_STREAM:
+    done = stream_body (ev, d->statement, out);
+    break;
+  case NAME_QUANTITY:
+    done = let_body (ev, d->statement, out);
+    break;
+  case NAME_REFERENCE:
+    done = reference_body (ev, d->statement, state);
+    break;
+  }
+  if (!done && d->statement->value) {
+    fault_place (ev->fault, d->statement->value->at);
+  }
+  return done;
+}
+
+bool
+definition_refresh (struct session *session, struct definition *d, struct fault *fault)
+{
+  struct evaluation ev;
+  struct result notes;
+  struct value value;
+  struct state state;
+  arena_reset (d->cache);
+  d->version = 0;
+  result_init (&notes, d->cache, d->source);
+  evaluation_init (&ev, session, &notes, fault);
+  ev.arena = d->cache;
+  if (!body (&ev, d, &value, &state)) {
+    return false;
+  }
+  if (d->kind == NAME_GAS && value.gas->closed) {
+    caution_gas (&notes, value.gas->closed, d->name);
+  } else if (d->kind == NAME_STREAM && tree_new_gas (d->statement->value)) {
+    caution_gas (&notes, value.stream.gas, d->name);
+  }
+  if (d->kind == NAME_REFERENCE) {
+    d->state = state;
+  } else {
+    d->value = value;
+  }
+  d->touched = ev.touched;
+  d->assumptions = ev.assumptions;
+  d->assumption_count = ev.assumption_count;
+  d->sources = ev.sources;
+  d->source_count = ev.source_count;
+  d->notes = notes.notes;
+  d->cautions = notes.cautions;
+  d->version = session->version;
+  return true;
+}
+
+static bool
+draws_on (const struct definition *d, const struct spread *source)
+{
+  for (size_t i = 0; i < d->source_count; i++)
+    if (d->sources[i] == source) {
+      return true;
+    }
+  return false;
+}
+
+/* Makes the cache hold; hands on what it leaned on.  */
+static bool
+bring_up_to_date (struct evaluation *ev, struct definition *d, struct place at)
+{
+  if (d->version != ev->session->version) {
+    struct fault inside;
+    fault_init (&inside, ev->fault->arena);
+    if (!definition_refresh (ev->session, d, &inside)) {
+      fault_set_at (ev->fault, inside.kind, at, inside.fact[0], inside.fact[1]);
+      fault_facts (ev->fault, inside.fact[2], inside.fact[3]);
+      if (inside.hint) {
+        fault_hint (ev->fault, "%s", inside.hint);
+      }
+      return false;
+    }
+  }
+  ev->touched |= d->touched;
+  evaluation_use (ev, d);
+  for (size_t i = 0; i < d->source_count; i++) {
+    evaluation_source (ev, d->sources[i]);
+  }
+  for (size_t i = 0; ev->describe && i < d->assumption_count; i++) {
+    evaluation_assume (ev, &d->assumptions[i]);
+  }
+  return true;
+}
+
+/* Does the cache say what this evaluation, with its other settings or moved figure, would find? */
+static bool
+cache_serves (const struct evaluation *ev, const struct definition *d)
+{
+  return !(ev->overridden & d->touched) && !(ev->moved && draws_on (d, ev->moved));
+}
+
+/* Works a definition out under the settings of EV, leaving its cache alone.  */
+static bool
+work_out (struct evaluation *ev, const struct definition *d, struct place at, struct value *value,
+          struct state *state)
+{
+  const char *subject = ev->subject;
+  struct fault *fault = ev->fault, inside;
+  fault_init (&inside, fault->arena);
+  ev->fault = &inside;
+  bool done = body (ev, d, value, state);
+  ev->fault = fault;
+  ev->subject = subject;
+  return done || fault_set_at (fault, inside.kind, at, inside.fact[0], inside.fact[1]);
+}
+
+const struct value *
+definition_value (struct evaluation *ev, struct definition *d, struct place at)
+{
+  struct state unused;
+  if (!bring_up_to_date (ev, d, at)) {
+    return NULL;
+  }
+  if (cache_serves (ev, d)) {
+    return &d->value;
+  }
+  struct value *value = ARENA_NEW (ev->arena, struct value);
+  return work_out (ev, d, at, value, &unused) ? value : NULL;
+}
+
+const struct state *
+definition_state (struct evaluation *ev, struct definition *d, struct place at)
+{
+  struct value unused;
+  if (!bring_up_to_date (ev, d, at)) {
+    return NULL;
+  }
+  if (cache_serves (ev, d)) {
+    return &d->state;
+  }
+  struct state *state = ARENA_NEW (ev->arena, struct state);
+  return work_out (ev, d, at, &unused, state) ? state : NULL;
+}
+
+/* ---- What it has to say ---- */
+
+static void
+tell (struct result *result, const struct remark *remark)
+{
+  for (; remark; remark = remark->next) {
+    struct remark *copy = result_remark (result, remark->kind, remark->fact[0], remark->fact[1]);
+    copy->fact[2] = remark->fact[2];
+    copy->fact[3] = remark->fact[3];
+  }
+}
+
+void
+definition_tell (struct session *session, struct definition *d, bool all, struct result *result)
+{
+  if (d->told && !all) {
+    return;
+  }
+  d->told = true;
+  tell (result, d->notes);
+  tell (result, d->cautions);
+  for (size_t i = 0; i < d->need_count; i++) {
+    struct definition *need = name_find (session, d->needs[i], strlen (d->needs[i]));
+    if (need && need != d && need->version == session->version) {
+      definition_tell (session, need, all, result);
+    }
+  }
+}
+
+void
+caution_gas (struct result *result, const struct composition *gas, const char *name)
+{
+  struct hazard found[HAZARD_MOST];
+  struct arena *arena = result->arena;
+  size_t n = hazard_find (gas, found);
+  for (size_t i = 0; i < n; i++) {
+    const struct hazard *h = &found[i];
+    const char *ratio = figure_text (arena, h->ratio);
+    struct remark *remark;
+    switch (h->kind) {
+    case HAZARD_TOXIC:
+      ratio = arena_format (arena, "%.3g", h->ratio);
+      remark = result_remark (result, MESSAGE_CAUTION_TOXIC, h->species->key, ratio);
+      remark->fact[2] = share_text (arena, h->limit);
+      remark->fact[3] = h->species->exposure_source;
+      break;
+    case HAZARD_FLAMMABLE:
+      result_remark (result, MESSAGE_CAUTION_FLAMMABLE, name,
+                     arena_format (arena, "%.3g times", h->ratio));
+      break;
+    case HAZARD_OXYGEN_RICH:
+    case HAZARD_OXYGEN_POOR:
+      result_remark (result, h->kind == HAZARD_OXYGEN_RICH ? MESSAGE_CAUTION_OXYGEN_RICH
+                                                           : MESSAGE_CAUTION_OXYGEN_POOR,
+                     share_text (arena, h->ratio * h->limit), NULL);
+      break;
+    }
+  }
+}

@@ -1,0 +1,145 @@
+#include "config.h"
+#include "language/session_private.h"
+
+#include <stdlib.h>
+#include <string.h>
+#include "gas/air.h"
+#include "gas/reference.h"
+#include "gas/species.h"
+#include "language/commands/commands.h"
+#include "language/wording.h"
+#include "result/result.h"
+#include "support/arena.h"
+#include "support/map.h"
+#include "support/memory.h"
+#include "units/constants.h"
+#include "units/unit.h"
+
+static const struct species *
+species_of_key (struct session *s, const char *key)
+{
+  const struct species *species = NULL;
+  const char *candidates;
+  (void) species_find (s->vocabulary.species, key, strlen (key), &species, &candidates);
+  return species;
+}
+
+static bool
+read_tables (struct session *s, const char *directory, struct fault *fault)
+{
+  s->vocabulary.units = unit_table_create (directory, fault);
+  s->vocabulary.species = s->vocabulary.units ? species_table_create (directory, fault) : NULL;
+  s->references = s->vocabulary.species
+                    ? reference_table_create (s->vocabulary.units, directory, fault) : NULL;
+  if (!s->references) {
+    return false;
+  }
+  s->water = species_of_key (s, "H2O");
+  s->oxygen = species_of_key (s, "O2");
+  return air_composition (s->arena, s->vocabulary.species, NULL, &s->air, fault);
+}
+
+struct session *
+session_create (const struct session_options *options, struct fault *fault)
+{
+  struct session *s = memory_get (1, sizeof *s);
+  s->options = *options;
+  s->arena = arena_create ();
+  s->names = map_create ();
+  s->version = 1;
+  settings_init (&s->settings);
+  if (!read_tables (s, options->tables, fault)) {
+    session_destroy (s);
+    return NULL;
+  }
+  return s;
+}
+
+void
+session_destroy (struct session *s)
+{
+  if (!s) {
+    return;
+  }
+  undo_clear (s);
+  names_clear (s);
+  if (s->references) {
+    reference_table_destroy (s->references);
+  }
+  if (s->vocabulary.species) {
+    species_table_destroy (s->vocabulary.species);
+  }
+  if (s->vocabulary.units) {
+    unit_table_destroy (s->vocabulary.units);
+  }
+  memory_release (s->last_subject);
+  arena_destroy (s->arena);
+  memory_release (s);
+}
+
+const struct settings *
+session_settings (const struct session *s)
+{
+  return &s->settings;
+}
+
+const struct vocabulary *
+session_vocabulary (const struct session *s)
+{
+  return &s->vocabulary;
+}
+
+enum block
+session_block (const struct session *s)
+{
+  (void) s;
+  return BLOCK_NONE;                    /* no statement of this version opens a block */
+}
+
+void
+session_leave_block (struct session *s)
+{
+  (void) s;
+}
+
+bool
+session_run (struct session *s, const struct statement *statement, struct result *result,
+             struct fault *fault)
+{
+  if (!fault->arena) {
+    fault->arena = result->arena;
+  }
+  return statement->kind == STATEMENT_ASK ? ask (s, statement, result, fault)
+                                          : command_run (s, statement, result, fault);
+}
+
+int
+session_digits (const struct session *s)
+{
+  return s->settings.digits;
+}
+
+bool
+session_settings_changed (const struct session *s)
+{
+  return settings_changed (&s->settings);
+}
+
+const char *
+session_opening (struct session *s, struct arena *arena)
+{
+  const struct settings *set = &s->settings;
+  const char *how = set->is_set[SETTING_SITE_ALTITUDE] ? "estimated"
+                    : set->is_set[SETTING_SITE_PRESSURE] ? "as set" : "standard";
+  return arena_format (arena, "barometer %s bar (%s)   volumes %s",
+                       figure_text (arena, set->site_pressure / 1e5), how,
+                       set->real_volumes ? "real" : "ideal-gas");
+}
+
+void
+session_each_name (const struct session *s, void (*visit) (const char *, void *), void *with)
+{
+  for (size_t i = 0; i < s->count; i++) {
+    visit (s->order[i]->name, with);
+  }
+}

@@ -1,0 +1,149 @@
+/* The inside of a session, for the language layer alone.  */
+#ifndef LANGUAGE_SESSION_PRIVATE_H
+#define LANGUAGE_SESSION_PRIVATE_H
+
+#include <stdbool.h>
+#include <stddef.h>
+#include "language/evaluation.h"
+#include "language/session.h"
+#include "support/check.h"
+
+struct composition; struct map; struct reference_table; struct remark; struct result;
+struct species;
+
+enum name_kind { NAME_GAS, NAME_STREAM, NAME_QUANTITY, NAME_REFERENCE };
+
+/* A name and its formula.  The tree was parsed from `source` into the definition's own arena and
+   is never changed; a redefinition makes another definition.  What it came to is kept until
+   something changes (`version`).                                                                */
+struct definition {
+  struct arena *arena, *cache;             /* owned */
+  const char *name, *source;
+  enum name_kind kind;
+  const struct statement *statement;
+  const char *const *needs;                /* the user's names it mentions */
+  size_t need_count;
+  unsigned holders;                        /* session and undo log */
+
+  unsigned long version;                   /* of the session, when the cache was made; 0: none */
+  struct value value;
+  struct state state;                      /* of a reference */
+  unsigned touched;
+  struct assumption *assumptions;
+  const struct spread **sources;
+  size_t assumption_count, source_count;
+  struct remark *notes, *cautions;         /* from the cache */
+  bool told;                               /* its notes have stood under an answer */
+};
+
+/* One change that undo can take back; the changes of a group are taken back together.  */
+struct change {
+  unsigned group;
+  const char *name;                        /* null: settings */
+  struct definition *before, *after;       /* null: there was none, there is none */
+  size_t place;                            /* where `before` stood */
+  struct settings settings;                /* before */
+};
+
+enum { UNDO_MOST = 200 };
+
+struct session {
+  struct session_options options;
+  struct vocabulary vocabulary;
+  struct reference_table *references;
+  const struct species *water, *oxygen;
+  const struct composition *air;           /* as predefined */
+  struct arena *arena;                     /* what lasts: tables' extras, texts of settings */
+  struct settings settings;
+  unsigned long version;                   /* grows with every change */
+  struct map *names;                       /* of struct definition */
+  struct definition **order;               /* as first defined */
+  size_t count, room;
+  struct change *changes;
+  size_t change_count, change_room;
+  unsigned group, groups_open;             /* of the next change; how deep in `open` */
+  char *last_subject;                      /* source of the last question's expression; or null */
+  size_t last_length, last_room;
+};
+
+const struct settings *session_settings (const struct session *);
+
+/* ---- Definitions (definition.c) ---- */
+
+/* A definition of NAME by SOURCE, a whole statement: parsed, not yet worked out.  Null with
+   FAULT, places counted in SOURCE.                                                              */
+struct definition *definition_make (struct session *, const char *source, enum name_kind,
+                                    struct fault *) MUST_CHECK;
+void definition_hold (struct definition *);
+void definition_release (struct definition *);       /* null is allowed */
+/* Works a definition out afresh, into its cache; places of faults are counted in its source.    */
+bool definition_refresh (struct session *, struct definition *, struct fault *) MUST_CHECK;
+/* What a definition comes to, from its cache where that still holds.  What it touched, assumed
+   and drew on goes into EV; a fault inside it is placed at AT, where its name stands.           */
+const struct value *definition_value (struct evaluation *, struct definition *,
+                                      struct place at) MUST_CHECK;
+const struct state *definition_state (struct evaluation *, struct definition *,
+                                      struct place at) MUST_CHECK;
+/* Adds the notes and cautions of a definition, and of those it needs, that have not stood under
+   an answer yet (ALL: even those that have).                                                    */
+void definition_tell (struct session *, struct definition *, bool all, struct result *);
+/* Cautions that follow from what is in a gas.  NAME: what it is called.  */
+void caution_gas (struct result *, const struct composition *, const char *name);
+
+/* ---- Names (names.c) ---- */
+
+struct definition *name_find (const struct session *, const char *name, size_t length);
+/* Defines a name by SOURCE (a whole statement): refuses what depends on itself or leaves another
+   without sense, keeps it and makes it undoable.  FROM is the statement as typed, for places.   */
+bool name_define (struct session *, const struct statement *from, const char *source,
+                  enum name_kind, struct result *, struct fault *) MUST_CHECK;
+bool name_forget (struct session *, const struct node *names, struct fault *) MUST_CHECK;
+/* "there is no ..." with the nearest name offered.  */
+bool name_unknown (struct evaluation *, const struct node *name);
+/* Puts a definition where it belongs, or (null) takes the name away; returns where it stood.    */
+size_t name_place (struct session *, const char *name, struct definition *, size_t place);
+void names_clear (struct session *);
+/* The names of definitions whose figures lean on what BITS stand for: "raw, feed"; null: none.  */
+const char *names_touching (const struct session *, struct arena *, unsigned bits);
+
+/* Calls VISIT for every node of a statement's trees.  */
+void tree_visit (const struct statement *, void (*visit) (const struct node *, void *), void *);
+
+/* The part of an expression that brings a gas of its own into being, that no definition speaks
+   for: a list, a blend, a remainder; or null.                                                   */
+const struct node *tree_new_gas (const struct node *);
+
+/* ---- Undo (undo.c) ---- */
+
+/* Notes a change: of NAME from BEFORE (which stood at PLACE) to AFTER, or (null) of settings.   */
+void undo_note (struct session *, const char *name, struct definition *before,
+                struct definition *after, size_t place, const struct settings *settings_before);
+/* Takes the last change back and says in RESULT what it was.  Kind undo-empty.  */
+bool undo_last (struct session *, struct result *, struct fault *) MUST_CHECK;
+/* Changes from `open` to `close` are one.  undo_group_drop takes them back.  */
+void undo_group_open (struct session *);
+void undo_group_close (struct session *);
+void undo_group_drop (struct session *);
+void undo_clear (struct session *);
+
+/* ---- Questions (ask.c, convert.c) ---- */
+
+/* One figure of an answer.  */
+struct figure {
+  const char *what;
+  double value;
+  const struct unit *unit;                  /* null: a plain number */
+  const char *unit_text;
+  const char *moisture, *basis, *label;
+};
+struct figures { struct figure *at; size_t count, room; };
+void figures_add (struct evaluation *, struct figures *, const struct figure *);
+
+/* What an answer is about: what it is called, and where that stands.  */
+struct subject { const char *what; struct place at; };
+/* VALUE in TARGET (null: in the units it was typed in).  */
+bool convert_value (struct evaluation *, const struct value *, const struct target *,
+                    const struct subject *, struct figures *) MUST_CHECK;
+/* Runs a question: figures, uncertainties, assumptions with their effects, notes.  */
+bool ask (struct session *, const struct statement *, struct result *, struct fault *) MUST_CHECK;
+#endif

@@ -1,0 +1,44 @@
+/* What the user may set, and what it is when nothing was set.
+
+   A value type: copies are independent, so an answer can be worked out again under other settings
+   (what would the usual alternative do?) without touching the session.                          */
+#ifndef LANGUAGE_SETTINGS_H
+#define LANGUAGE_SETTINGS_H
+
+#include <stdbool.h>
+#include "eos/eos.h"
+#include "gas/reference.h"
+#include "language/tree.h"
+#include "units/unit.h"
+
+enum below_detection { BELOW_ZERO, BELOW_HALF, BELOW_LIMIT };
+
+/* What a reference family stands for: conditions, and how they are written.  */
+struct family_setting { struct conditions at; const char *text; bool set; const char *source; };
+
+struct settings {
+  struct family_setting family[FAMILY_COUNT];
+  double site_pressure;                    /* Pa */
+  const char *site_pressure_text;          /* as it was set; null: as shipped */
+  const struct spread *site_pressure_spread;
+  double site_altitude;                    /* m; NAN: the pressure was not estimated from it */
+  const char *site_altitude_text;
+  enum gas_model model;
+  bool real_volumes;
+  double oxygen_in_air;                    /* mol/mol */
+  double total_tolerance;                  /* relative */
+  enum below_detection below;
+  double combustion;                       /* K */
+  bool calorific_1995;
+  int digits;
+  bool ignore_total;                       /* while a figure is moved by its uncertainty */
+  bool bare_is_gauge;                      /* while the gauge reading of bare pressures is tried */
+  bool is_set[SETTING_COUNT];              /* changed by the user */
+  const char *source[SETTING_COUNT];       /* the statement that set it, for `save` */
+};
+
+/* As shipped: language.md's "Meanings and defaults".  */
+void settings_init (struct settings *);
+bool settings_changed (const struct settings *);
+
+#endif

@@ -1,0 +1,120 @@
+#include "config.h"
+#include "language/evaluation.h"
+
+#include <math.h>
+#include "eos/eos.h"
+#include "gas/composition.h"
+#include "gas/species.h"
+#include "language/session_private.h"
+#include "language/wording.h"
+#include "support/arena.h"
+#include "units/constants.h"
+
+bool
+family_molar_volume (struct evaluation *ev, enum reference_family family,
+                     const struct composition *gas, bool real, double *Vm)
+{
+  const struct family_setting *setting = &ev->settings->family[family];
+  double ideal = GAS_CONSTANT * setting->at.T / setting->at.p;
+  assume_family (ev, family);
+  evaluation_touch (ev, TOUCH_VOLUMES);
+  if (!gas || !(real || ev->settings->real_volumes)) {
+    *Vm = ideal;
+    return true;
+  }
+  double Z;
+  const char *model;
+  struct volume_question question = { gas, setting->at.T, setting->at.p, UNSTATED, false };
+  if (!actual_molar_volume (ev, &question, Vm, &Z, &model)) {
+    return false;
+  }
+  if (ev->result) {
+    note (ev, MESSAGE_NOTE_REFERENCE_REAL, figure_text (ev->arena, Z), setting->text, model);
+  }
+  return true;
+}
+
+/* Water beyond saturation would not stay in the gas: said, not taken away.  */
+static void
+note_condensation (struct evaluation *ev, const struct volume_question *q)
+{
+  if (!ev->result) {
+    return;
+  }
+  double y = composition_fraction (q->gas, ev->session->water), saturation;
+  struct state saturated = { .T = q->T, .p = q->p, .moisture = MOISTURE_SATURATED };
+  struct fault unheard;
+  fault_init (&unheard, ev->arena);
+  struct evaluation aside;
+  evaluation_again (&aside, ev, &unheard);
+  if (y > 0 && state_water (&aside, &saturated, q->T, q->p, &saturation)
+      && y > saturation * (1 + 1e-6)) {
+    note (ev, MESSAGE_NOTE_CONDENSE, share_text (ev->arena, y),
+          share_text (ev->arena, saturation), NULL);
+  }
+}
+
+static bool
+model_molar_volume (struct evaluation *ev, const struct volume_question *q, double *Vm, double *Z,
+                    const char **model)
+{
+  const char *lacking = NULL;
+  enum gas_model wanted = q->ideal ? GAS_MODEL_IDEAL : ev->settings->model;
+  const struct equation *equation = equation_choose (wanted, q->gas, &lacking, ev->fault);
+  struct eos_state state;
+  evaluation_touch (ev, TOUCH_MODEL);
+  if (!equation || !eos_solve (equation, q->gas, q->T, q->p, &state, ev->fault)) {
+    return false;
+  }
+  *Z = state.Z;
+  *Vm = 1 / state.density;
+  *model = equation->name;
+  if (q->ideal || ev->settings->is_set[SETTING_GAS_MODEL]) {
+    return true;
+  }
+  if (lacking) {
+    if (ev->describe) {
+      evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_MODEL_LACKING,
+                                                    .fact = { lacking } });
+    }
+  } else {
+    assume_model (ev, equation->name, state.Z);
+  }
+  if (state.may_condense && ev->result) {
+    note (ev, MESSAGE_NOTE_TWO_PHASE, equation->name, NULL, NULL);
+  }
+  return true;
+}
+
+bool
+actual_molar_volume (struct evaluation *ev, const struct volume_question *q, double *Vm, double *Z,
+                     const char **model)
+{
+  if (!(q->T > 0) || !(q->p > 0)) {
+    return fault_set (ev->fault, MESSAGE_RANGE,
+                      "a state needs a temperature and a pressure above zero", NULL);
+  }
+  if (q->gas) {
+    note_condensation (ev, q);
+  }
+  if (!isnan (q->Z)) {
+    *Z = q->Z;
+    *model = "as given";
+    *Vm = q->Z * GAS_CONSTANT * q->T / q->p;
+    if (ev->result) {
+      note (ev, MESSAGE_NOTE_GIVEN_Z, figure_text (ev->arena, q->Z), NULL, NULL);
+    }
+    return true;
+  }
+  if (!q->gas) {
+    /* A volume of nobody's gas: ideal.  */
+    *Z = 1;
+    *model = "ideal";
+    *Vm = GAS_CONSTANT * q->T / q->p;
+    if (ev->describe) {
+      evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_IDEAL_TRACE });
+    }
+    return true;
+  }
+  return model_molar_volume (ev, q, Vm, Z, model);
+}
