@@ -25,8 +25,9 @@ struct parser;
 struct parser *parser_create (struct arena *, const struct vocabulary *, const char *text,
                               size_t n, int first, enum block) MUST_CHECK;
 
-/* The next statement.  True with *STATEMENT null at the end; false with FAULT.  The parser
-   follows blocks that open and close in its own text.                                           */
+/* The next statement.  True with *STATEMENT null at the end; false with FAULT (which was
+   initialised).  After a fault the next call goes on behind the statement that failed.  The
+   parser follows blocks that open and close in its own text.                                    */
 bool parser_next (struct parser *, struct statement **, struct fault *) MUST_CHECK;
 enum block parser_block (const struct parser *);
 /* Source text of the statement that failed, as typed, for messages (valid after a fault).       */

@@ -131,5 +131,6 @@ parse_sheet_line (struct parser *p, struct statement *statement)
   }
   statement->claim = parse_claim (p, false);
   return statement->claim != NULL
-         && expect_end (p, at_word (p, "of") ? "what the figures are of stands behind sheet" : CLAIM);
+         && expect_end (p, at_word (p, "of") ? "what the figures are of stands behind 'sheet'"
+                           : CLAIM);
 }

@@ -23,6 +23,23 @@ fail_unfinished (struct parser *p, const char *way_on)
   return fail (p, MESSAGE_UNFINISHED, behind, way_on, NULL);
 }
 
+/* 1,250 and 1,5: what the figure was meant as, where there is one comma in it.  */
+static void
+offer_figure (struct parser *p)
+{
+  enum { GROUP = 3 };             /* digits that a thousands mark parts off */
+  const char *typed = token_text (p, &p->token), *comma = strchr (typed, ',');
+  if (comma == NULL || strchr (comma + 1, ',') != NULL || strchr (typed, '.') != NULL)
+    return;
+  int whole = (int) (comma - typed);
+  if (strlen (comma + 1) == GROUP)
+    fault_hint (p->fault, "did you mean '%.*s_%s' or '%.*s.%s'? in a list put a blank behind the"
+                " comma", whole, typed, comma + 1, whole, typed, comma + 1);
+  else
+    fault_hint (p->fault, "did you mean '%.*s.%s'? in a list put a blank behind the comma", whole,
+                typed, comma + 1);
+}
+
 /* What is wrong with the token by itself, wherever it stands.  */
 static bool
 fail_bad_token (struct parser *p)
@@ -33,6 +50,8 @@ fail_bad_token (struct parser *p)
         of_character ? t->hint : NULL);
   if (t->hint != NULL && !of_character)
     fault_hint (p->fault, "%s", t->hint);
+  else if (t->wrong == MESSAGE_NUMBER_COMMA)
+    offer_figure (p);
   return false;
 }
 

@@ -155,6 +155,22 @@ parse_own_unit (struct parser *p, struct list_reading *reading)
   return true;
 }
 
+/* `40 dry mol%`, `mol% dry gas`: behind dry and wet nothing follows in a list.  */
+static bool
+check_behind_words (struct parser *p)
+{
+  struct unit_read read;
+  struct scanner behind;
+  if (unit_at (p, &p->token, &read, &behind))
+    return fail_here (p, MESSAGE_WORD_PLACE, read.text,
+                      arena_format (p->arena, "dry and wet follow the basis: did you mean"
+                                    " '%s dry'?", read.text));
+  if (p->token.kind != TOKEN_WORD || at_word (p, "and"))
+    return true;
+  return fail_here (p, MESSAGE_WORD_PLACE, token_text (p, &p->token),
+                    "dry and wet follow the basis: mol% dry");
+}
+
 /* [ UNIT ] { word } behind the last amount: the basis of all parts that have none  */
 static bool
 parse_basis (struct parser *p, struct list_reading *reading)
@@ -175,11 +191,7 @@ parse_basis (struct parser *p, struct list_reading *reading)
     return false;
   if (list->words != 0)
     reading->closed = true;
-  if (list->words != 0 && (opens_unit (p, &p->token)
-                           || (p->token.kind == TOKEN_WORD && !at_word (p, "and"))))
-    return fail_here (p, MESSAGE_WORD_PLACE, token_text (p, &p->token),
-                      "dry and wet follow the basis: mol% dry");
-  return true;
+  return list->words == 0 || check_behind_words (p);
 }
 
 static bool

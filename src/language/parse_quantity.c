@@ -15,8 +15,10 @@ at_number (const struct parser *p)
 static bool
 parse_number (struct parser *p, double *value, const char **figure)
 {
+  enum { GROUP = 3 };             /* digits that a thousands mark parts off */
   const struct token *t = &p->token;
   const char *text = p->scan.text + t->start;
+  size_t start = t->start, end = t->end;
   bool too_large = false;
   if (t->kind != TOKEN_NUMBER)
     return fail_here (p, MESSAGE_NUMBER_EXPECTED, "a figure is a number with its unit", NULL);
@@ -26,7 +28,11 @@ parse_number (struct parser *p, double *value, const char **figure)
   token_take (p);
   if (p->token.kind != TOKEN_NUMBER)
     return true;
-  return fail (p, MESSAGE_NUMBER_BLANK, p->token.at, NULL, NULL);
+  fail (p, MESSAGE_NUMBER_BLANK, p->token.at, NULL, NULL);
+  if (t->end - t->start == GROUP)
+    fault_hint (p->fault, "digits are grouped with _ : did you mean '%s_%s'?",
+                bytes_text (p, start, end), token_text (p, t));
+  return false;
 }
 
 bool

@@ -21,7 +21,8 @@ fail_value (struct parser *p, enum setting setting, struct place at)
 #include "language/settings.def"
 #undef SETTING
   };
-  return fail (p, MESSAGE_SETTING_VALUE, at, settings[setting].text, settings[setting].takes);
+  return fail (p, MESSAGE_SETTING_VALUE, at, settings[setting].text,
+               arena_format (p->arena, "it takes %s", settings[setting].takes));
 }
 
 /* One of WORDS.  A word may be several tokens: ISO 6976:2016.  */

@@ -185,7 +185,10 @@ fail_behind_question (struct parser *p, const struct statement *statement)
                             : "a question needs no verb: 12 bar(g) in psi(g)");
   if (statement->targets != NULL)
     return fail_unexpected (p, p->token.kind == TOKEN_OPEN
-                            ? "dry and wet follow the unit without brackets" : NULL);
+                            ? "dry and wet follow the unit without brackets"
+                            : at_word (p, "in") ? "targets are parted by commas: in m3/h, kg/h"
+                            : at_word (p, "counted") ? "counted as ... follows the unit at once"
+                            : NULL);
   return fail_behind_sum (p, at_word (p, "to") ? "write 'in' before the unit" : NULL);
 }
 

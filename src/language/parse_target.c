@@ -1,7 +1,8 @@
 #include "config.h"
 #include "language/parse_private.h"
 
-static const char A_TARGET[] = "a target is a unit";
+static const char A_TARGET[] =
+  "what is counted stands with the unit: in Nm3/h dry, in m3/h at 20 degC, 1 bar(a)";
 
 /* What stands where the unit of a target should.  */
 static bool
@@ -166,7 +167,7 @@ check_comma (struct parser *p)
   struct scanner behind;
   if (!unit_at (p, &p->token, &read, &behind) || words_here (p, "counted as") > 0)
     return true;
-  return fail_here (p, MESSAGE_COMMA_MISSING, token_text (p, &p->token),
+  return fail_here (p, MESSAGE_COMMA_MISSING, read.text,
                     "targets are parted by commas");
 }
 

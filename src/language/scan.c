@@ -242,8 +242,8 @@ hint_for_character (unsigned code)
 {
   switch (code) {
   case '?': return "no question mark is needed";
-  case '@': return "write at";
-  case '>': return "write: at least; of a part: give the impurities and 'rest'";
+  case '@': return "write 'at'";
+  case '>': return "write 'at least'; of a part: give the impurities and 'rest'";
   case '[': case ']': case '{': case '}': return "write round brackets";
   case '\'': return "texts stand in double quotes";
   case '\\': return "'\\' ends a line that goes on in the next";
@@ -252,7 +252,7 @@ hint_for_character (unsigned code)
   case DEGREE: return "\302\260 is followed by C or F";
   case EN_DASH: return "write -";
   case LEFT_QUOTE: case RIGHT_QUOTE: return "write \"";
-  case RIGHT_ARROW: return "write in";
+  case RIGHT_ARROW: return "write 'in'";
   default: return code >= 0xAA ? "letters outside a-z stand in double quotes" : NULL;
   }
 }
@@ -305,7 +305,7 @@ scan_sign (struct scanner *s, struct token *t)
   case '-':
     sign (s, t, TOKEN_MINUS, next == '>' ? 2 : 1);
     if (next == '>')
-      bad (t, MESSAGE_CHARACTER, "write in");
+      bad (t, MESSAGE_CHARACTER, "write 'in'");
     return;
   case '<': sign (s, t, next == '=' ? TOKEN_AT_MOST : TOKEN_LESS, next == '=' ? 2 : 1); return;
   case '>':

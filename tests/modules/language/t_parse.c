@@ -117,8 +117,7 @@ places_of_nodes_cover_their_words (void)
 {
   struct bench b;
   NEED (bench_open (&b));
-  const struct statement *s = first_of (&b, "  CO2 of (feed + recycle) at 20 degC in kg/h, mg / Nm3");
-  CHECK (s == NULL);              /* a blank in the second target's unit */
+  const struct statement *s;
   s = first_of (&b, "  CO2 of (feed + recycle) at 20 degC, 5 bar (g) in kg/h");
   NEED (s != NULL && s->value->kind == NODE_AT && s->targets != NULL);
   SAME_INT (s->at.first, 3);
@@ -206,8 +205,8 @@ lists_read_their_basis (void)
   NEED (bench_open (&b));
   reads (&b, "gas g = CH4 60 mol%, CO2 40 mol% dry", "(gas g (mix (CH4 (60 mol%)) (CO2 40)"
          " (basis mol% dry)))");
-  reads (&b, "gas g = CH4 58.2 \xC2\xB1 2 % mol%, CO2 rest", "(gas g (mix (CH4 (58.2 mol% (pm 2 %)))"
-         " (CO2 rest)))");
+  reads (&b, "gas g = CH4 58.2 \xC2\xB1 2 % mol%, CO2 rest",
+         "(gas g (mix (CH4 (58.2 mol% (pm 2 %))) (CO2 rest)))");
   reads (&b, "gas g = CO2 40 +- 1 (limits), N2 rest mass%", "(gas g (mix (CO2 (40 (pm 1 (limits))))"
          " (N2 rest) (basis mass%)))");
   reads (&b, "gas g = CO2 (x) ppm, N2 rest mol%", "(gas g (mix (CO2 x ppm) (N2 rest)"
@@ -264,7 +263,8 @@ settings_are_read_with_their_kinds (void)
   struct bench b;
   NEED (bench_open (&b));
   reads (&b, "set total tolerance 0.5 %", "(set total-tolerance (q 0.5 %))");
-  reads (&b, "set scf at 60 degF, 14.696 psia", "(set scf (at (T (q 60 degF)) (P (q 14.696 psia))))");
+  reads (&b, "set scf at 60 degF, 14.696 psia",
+         "(set scf (at (T (q 60 degF)) (P (q 14.696 psia))))");
   fails (&b, "set digits 2", "setting-value", 1, 12);
   fails (&b, "set digits 8.5", "setting-value", 1, 12);
   fails (&b, "set digits 8 %", "setting-value", 1, 12);
@@ -292,7 +292,7 @@ names_are_told_from_words (void)
   reads (&b, "known in kg/h", "(ask known (to kg/h))");
   reads (&b, "show bar(g)", "(show bar(g))");
   reads (&b, "show carbon dioxide", "(show carbon dioxide)");
-  reads (&b, "help  gas model  # please", "(help gas model)");
+  reads (&b, "help  gas   model  # please", "(help gas model)");
   reads (&b, "Z of CO\xE2\x82\x82 at 20 \xE2\x84\x83, 1 bar(a), Z=0.9",
          "(ask (at (of Z CO2) (T (q 20 degC)) (P (q 1 bar(a))) (Z (q 0.9))))");
   fails (&b, "Let q = 5", "word-case", 1, 1);
@@ -396,7 +396,8 @@ long_lines_take_time_in_proportion (void)
 {
   static const char *const lines[][2] = {
     { "gas g = N2 rest", ", CO2 1 ppm" }, { "a in kg/h", ", mg/m3 at 20 degC, 1 bar(a)" },
-    { "note \"", "x" }, { "feed in ", "kg" }, { "a", "bcdefgh" }, { "forget a", ", carbon dioxide" },
+    { "note \"", "x" }, { "feed in ", "kg" }, { "a", "bcdefgh" },
+    { "forget a", ", carbon dioxide" },
     { "feed", " #" }, { "5", "0" }, { "feed ", " " }, { "feed ", "\\\n" }, { "feed", "?" },
     { "let x = feed at 20 degC", ", 1 bar (g" }, { "5 kg(", "(" }, { "help", " me" }
   };
