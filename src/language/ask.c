@@ -131,13 +131,26 @@ other_family (const struct assumption *a, struct other *o)
 
 /* The settings under which the alternative to an assumption is tried.  */
 static bool
-other_of (const struct assumption *a, struct other *o)
+other_of (struct arena *arena, const struct assumption *a, struct other *o)
 {
   switch (a->alternative) {
   case ALTERNATIVE_NONE:
     return false;
   case ALTERNATIVE_FAMILY:
     other_family (a, o);
+    return true;
+  case ALTERNATIVE_SHIPPED: {
+    struct settings shipped;
+    settings_init (&shipped);
+    o->settings.family[a->family] = shipped.family[a->family];
+    o->overridden = touch_family (a->family);
+    o->name = arena_format (arena, "at %s", shipped.family[a->family].text);
+    return true;
+  }
+  case ALTERNATIVE_REAL:
+    o->settings.model = GAS_MODEL_AUTO;
+    o->overridden = TOUCH_MODEL;
+    o->name = gas_model_name (GAS_MODEL_PENG_ROBINSON);
     return true;
   case ALTERNATIVE_SITE:
     o->overridden = TOUCH_SITE;
@@ -206,7 +219,7 @@ tell_assumption (struct evaluation *ev, const struct statement *s, const struct 
 {
   struct other other = { *ev->settings, 0, NULL };
   double effect = UNSTATED;
-  if (other_of (a, &other)) {
+  if (other_of (ev->arena, a, &other)) {
     effect = effect_of (ev, s, figures, &other);
     if (fabs (effect) < NO_EFFECT) {
       return;

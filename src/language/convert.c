@@ -254,6 +254,8 @@ oxygen_factor (struct conversion *c, double measured, const char *what, double *
                         figure_text (ev->arena, 100 * reference), figure_text (ev->arena, 100 * A),
                         figure_text (ev->arena, 100 * measured),
                         figure_text (ev->arena, *factor)));
+    note (ev, *factor < 1 ? MESSAGE_NOTE_OXYGEN_LOWERS : MESSAGE_NOTE_OXYGEN_RAISES, NULL, NULL,
+          NULL);
     note (ev, MESSAGE_CAUTION_EMISSION, NULL, NULL, NULL);
   }
   return true;

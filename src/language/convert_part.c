@@ -160,6 +160,9 @@ concentration (struct conversion *c)
     return fault_set_at (c->ev->fault, MESSAGE_NOT_AVAILABLE, c->at, "calorific values", NULL);
   }
   if (u->ratio != RATIO_NONE) {
+    if (u->ratio == RATIO_VOLUME && !standing.basis) {
+      standing.basis = "ideal mixing: equal to mol% for a gas, not for a liquid";
+    }
     return conversion_add (c, x * per_moles, &standing);
   }
   struct counted_volume volume;

@@ -252,7 +252,7 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
   } else {
     d->value = value;
   }
-  d->touched = ev.touched;
+  d->touched = ev.touched | (d->kind == NAME_QUANTITY ? TOUCH_QUANTITY : 0);
   d->assumptions = ev.assumptions;
   d->assumption_count = ev.assumption_count;
   d->sources = ev.sources;
@@ -304,7 +304,8 @@ bring_up_to_date (struct evaluation *ev, struct definition *d, struct place at)
 static bool
 cache_serves (const struct evaluation *ev, const struct definition *d)
 {
-  return !(ev->overridden & d->touched) && !(ev->moved && draws_on (d, ev->moved));
+  return !(ev->overridden & d->touched) && !(ev->moved && draws_on (d, ev->moved))
+         && !(ev->stand_in_count && (d->touched & TOUCH_QUANTITY));
 }
 
 /* Works a definition out under the settings of EV, leaving its cache alone.  */
@@ -326,6 +327,10 @@ const struct value *
 definition_value (struct evaluation *ev, struct definition *d, struct place at)
 {
   struct state unused;
+  for (size_t i = 0; i < ev->stand_in_count; i++)
+    if (ev->stand_ins[i].definition == d) {
+      return &ev->stand_ins[i].value;
+    }
   if (!bring_up_to_date (ev, d, at)) {
     return NULL;
   }

@@ -322,5 +322,8 @@ evaluate_list (struct evaluation *ev, const struct node *list, struct value *out
   *out = value_number (UNSTATED);
   out->kind = VALUE_GAS;
   out->gas = gas_of_analysis (ev, analysis, &named);
+  if (analysis->whole == WHOLE_MASS) {
+    note (ev, MESSAGE_NOTE_BY_MASS, named.name ? named.name : "the list", NULL, NULL);
+  }
   return out->gas != NULL;
 }

@@ -18,15 +18,19 @@
 
 struct arena; struct definition; struct result; struct session;
 
+/* A value tried in place of what a definition says.  */
+struct stand_in { const struct definition *definition; struct value value; };
+
 /* What an answer leaned on, as bits; the bits below FAMILY_COUNT are those of the families.  */
 enum touch { TOUCH_SITE = 1u << 8, TOUCH_MODEL = 1u << 9, TOUCH_OXYGEN = 1u << 10,
              TOUCH_BELOW = 1u << 11, TOUCH_TOLERANCE = 1u << 12, TOUCH_BARE = 1u << 13,
-             TOUCH_VOLUMES = 1u << 14 };
+             TOUCH_VOLUMES = 1u << 14, TOUCH_QUANTITY = 1u << 15 };
 static inline unsigned touch_family (enum reference_family f) { return 1u << (unsigned) f; }
 
 /* What the usual alternative to an assumption is.  */
-enum alternative { ALTERNATIVE_NONE, ALTERNATIVE_FAMILY, ALTERNATIVE_SITE, ALTERNATIVE_IDEAL,
-                   ALTERNATIVE_OXYGEN, ALTERNATIVE_BELOW, ALTERNATIVE_GAUGE };
+enum alternative { ALTERNATIVE_NONE, ALTERNATIVE_FAMILY, ALTERNATIVE_SHIPPED, ALTERNATIVE_SITE,
+                   ALTERNATIVE_IDEAL, ALTERNATIVE_REAL, ALTERNATIVE_OXYGEN, ALTERNATIVE_BELOW,
+                   ALTERNATIVE_GAUGE };
 
 /* Something taken because the user left it open.  */
 struct assumption {
@@ -46,6 +50,8 @@ struct evaluation {
   const char *subject;                      /* the name being defined, for notes; or null */
 
   unsigned overridden;                      /* settings that differ from the session's */
+  const struct stand_in *stand_ins;         /* values tried in place of definitions */
+  size_t stand_in_count;
   const struct spread *moved;               /* the uncertain figure that is moved, or null */
   double moved_by;                          /* by how many standard uncertainties */
 

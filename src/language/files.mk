@@ -15,6 +15,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/commands/save.c \
   %D%/commands/set.c \
   %D%/commands/show.c \
+  %D%/commands/trim.c \
   %D%/convert.c \
   %D%/convert.h \
   %D%/convert_part.c \

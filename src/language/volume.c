@@ -69,6 +69,10 @@ model_molar_volume (struct evaluation *ev, const struct volume_question *q, doub
   *Z = state.Z;
   *Vm = 1 / state.density;
   *model = equation->name;
+  if (ev->describe && wanted == GAS_MODEL_IDEAL && !q->ideal) {
+    evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_IDEAL_SET,
+                                                  .alternative = ALTERNATIVE_REAL });
+  }
   if (q->ideal || ev->settings->is_set[SETTING_GAS_MODEL]) {
     return true;
   }

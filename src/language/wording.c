@@ -138,11 +138,14 @@ void
 assume_family (struct evaluation *ev, enum reference_family family)
 {
   evaluation_touch (ev, touch_family (family));
-  if (ev->describe && !ev->settings->family[family].set) {
+  if (ev->describe) {
+    /* One that was set is said too: it may have been another shift that set it.  */
+    bool set = ev->settings->family[family].set;
     evaluation_assume (ev, &(struct assumption) {
-        .kind = MESSAGE_TAKEN_REFERENCE,
+        .kind = set ? MESSAGE_TAKEN_REFERENCE_SET
+                : family == FAMILY_SCCM ? MESSAGE_TAKEN_REFERENCE_SCCM : MESSAGE_TAKEN_REFERENCE,
         .fact = { reference_family_name (family), ev->settings->family[family].text },
-        .alternative = ALTERNATIVE_FAMILY, .family = family });
+        .alternative = set ? ALTERNATIVE_SHIPPED : ALTERNATIVE_FAMILY, .family = family });
   }
 }
 

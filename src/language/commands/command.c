@@ -63,6 +63,8 @@ command_run (struct session *session, const struct statement *s, struct result *
     return command_help (session, s, result, fault);
   case STATEMENT_UNDO:
     return command_undo (session, s, result, fault);
+  case STATEMENT_TRIM:
+    return command_trim (session, s, result, fault);
   case STATEMENT_QUIT:
     return quit (result);
   case STATEMENT_EMPTY:
@@ -72,7 +74,6 @@ command_run (struct session *session, const struct statement *s, struct result *
   case STATEMENT_SOLVE:
   case STATEMENT_SHEET:
   case STATEMENT_CHECK:
-  case STATEMENT_TRIM:
   case STATEMENT_NOTE:
   case STATEMENT_WORKINGS:
   case STATEMENT_MIX:
