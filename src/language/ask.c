@@ -112,6 +112,9 @@ uncertainties (const struct evaluation *ev, const struct statement *s, struct an
 
 /* ---- What the usual alternative would do ---- */
 
+/* A small change, to see whether an answer depends on something at all.  */
+#define WHETHER_IT_MATTERS 1e-3
+
 struct other { struct settings settings; unsigned overridden; const char *name; };
 
 static void
@@ -177,6 +180,14 @@ other_of (struct arena *arena, const struct assumption *a, struct other *o)
     o->overridden = TOUCH_BELOW;
     o->name = "at the limit";
     return true;
+  case ALTERNATIVE_BAROMETER:
+    o->settings.site_pressure *= 1 + WHETHER_IT_MATTERS;
+    o->overridden = TOUCH_SITE;
+    return true;
+  case ALTERNATIVE_VAPOUR:
+    o->settings.vapour_factor = 1 - WHETHER_IT_MATTERS;
+    o->overridden = TOUCH_VAPOUR;
+    return true;
   case ALTERNATIVE_GAUGE:
     o->settings.bare_is_gauge = true;
     o->overridden = TOUCH_BARE;
@@ -210,8 +221,8 @@ effect_of (const struct evaluation *ev, const struct statement *s, const struct 
   return largest;
 }
 
-/* Below this an alternative does not move the figure: rounding.  */
-#define NO_EFFECT 1e-12
+/* Below this an alternative does not move the figure in any digit that is shown.  */
+#define NO_EFFECT 5e-8
 
 static void
 tell_assumption (struct evaluation *ev, const struct statement *s, const struct figures *figures,
@@ -229,7 +240,7 @@ tell_assumption (struct evaluation *ev, const struct statement *s, const struct 
   remark->fact[2] = a->fact[2];
   remark->fact[3] = a->fact[3];
   remark->alternative = other.name;
-  remark->effect = effect;
+  remark->effect = other.name ? effect : UNSTATED;
 }
 
 /* ---- The answer ---- */

@@ -207,7 +207,11 @@ counted_as (struct conversion *c, const struct species *species, double *per_mol
     return true;
   }
   struct species_set set;
-  if (!species_named (c->ev, c->counted_as, &set)) {
+  struct result *result = c->ev->result;
+  c->ev->result = NULL;                 /* that S is a bare formula is no news here */
+  bool found = species_named (c->ev, c->counted_as, &set);
+  c->ev->result = result;
+  if (!found) {
     return false;
   }
   if (set.count != 1 || !shared_element (species, set.at[0], per_mole)) {

@@ -141,6 +141,9 @@ concentration (struct conversion *c)
 {
   struct host host;
   double factor, per_mass, per_moles;
+  if (c->ev->result && !(c->value->moles > 0)) {
+    note (c->ev, MESSAGE_NOTE_NONE_STATED, c->value->part, NULL, NULL);
+  }
   if (!host_of (c, &host) || !counted_mass (c, &per_mass, &per_moles)
       || !oxygen_factor (c, dry_oxygen (c, host.gas), c->what, &factor)) {
     return false;

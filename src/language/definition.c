@@ -143,6 +143,9 @@ stream_body (struct evaluation *ev, const struct statement *s, struct value *out
     return false;
   }
   if (out->kind == VALUE_STREAM) {
+    if (s->value->kind == NODE_ADD && isnan (out->stream.T)) {
+      note (ev, MESSAGE_NOTE_TEMPERATURE_UNSTATED, s->name, NULL, NULL);
+    }
     return true;
   }
   fault_set_at (ev->fault, MESSAGE_KIND_WRONG, s->value->at,
@@ -392,18 +395,17 @@ caution_gas (struct result *result, const struct composition *gas, const char *n
   size_t n = hazard_find (gas, found);
   for (size_t i = 0; i < n; i++) {
     const struct hazard *h = &found[i];
-    const char *ratio = figure_text (arena, h->ratio);
+    const char *ratio = rough_text (arena, h->ratio);
     struct remark *remark;
     switch (h->kind) {
     case HAZARD_TOXIC:
-      ratio = arena_format (arena, "%.3g", h->ratio);
       remark = result_remark (result, MESSAGE_CAUTION_TOXIC, h->species->key, ratio);
       remark->fact[2] = share_text (arena, h->limit);
       remark->fact[3] = h->species->exposure_source;
       break;
     case HAZARD_FLAMMABLE:
       result_remark (result, MESSAGE_CAUTION_FLAMMABLE, name,
-                     arena_format (arena, "%.3g times", h->ratio));
+                     arena_format (arena, "%s times", ratio));
       break;
     case HAZARD_OXYGEN_RICH:
     case HAZARD_OXYGEN_POOR:

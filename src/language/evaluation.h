@@ -24,13 +24,15 @@ struct stand_in { const struct definition *definition; struct value value; };
 /* What an answer leaned on, as bits; the bits below FAMILY_COUNT are those of the families.  */
 enum touch { TOUCH_SITE = 1u << 8, TOUCH_MODEL = 1u << 9, TOUCH_OXYGEN = 1u << 10,
              TOUCH_BELOW = 1u << 11, TOUCH_TOLERANCE = 1u << 12, TOUCH_BARE = 1u << 13,
-             TOUCH_VOLUMES = 1u << 14, TOUCH_QUANTITY = 1u << 15 };
+             TOUCH_VOLUMES = 1u << 14, TOUCH_QUANTITY = 1u << 15,
+             TOUCH_VAPOUR = 1u << 16 };
 static inline unsigned touch_family (enum reference_family f) { return 1u << (unsigned) f; }
 
-/* What the usual alternative to an assumption is.  */
+/* What the usual alternative to an assumption is.  The last two have none that is usual: they are
+   tried only to see whether the assumption matters to the answer.                               */
 enum alternative { ALTERNATIVE_NONE, ALTERNATIVE_FAMILY, ALTERNATIVE_SHIPPED, ALTERNATIVE_SITE,
                    ALTERNATIVE_IDEAL, ALTERNATIVE_REAL, ALTERNATIVE_OXYGEN, ALTERNATIVE_BELOW,
-                   ALTERNATIVE_GAUGE };
+                   ALTERNATIVE_GAUGE, ALTERNATIVE_BAROMETER, ALTERNATIVE_VAPOUR };
 
 /* Something taken because the user left it open.  */
 struct assumption {

@@ -31,6 +31,7 @@ settings_init (struct settings *s)
     .below = BELOW_HALF,
     .combustion = 288.15,
     .digits = 6,
+    .vapour_factor = 1,
   };
 }
 

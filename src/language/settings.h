@@ -33,6 +33,7 @@ struct settings {
   int digits;
   bool ignore_total;                       /* while a figure is moved by its uncertainty */
   bool bare_is_gauge;                      /* while the gauge reading of bare pressures is tried */
+  double vapour_factor;                    /* 1, but while it is tried whether water matters */
   bool is_set[SETTING_COUNT];              /* changed by the user */
   const char *source[SETTING_COUNT];       /* the statement that set it, for `save` */
 };

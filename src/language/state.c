@@ -317,6 +317,8 @@ state_water (struct evaluation *ev, const struct state *state, double T, double 
     }
     break;
   }
+  evaluation_touch (ev, TOUCH_VAPOUR);
+  *y *= ev->settings->vapour_factor;
   assume_vapour_pressure (ev, psat, over_ice);
   return true;
 }

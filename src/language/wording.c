@@ -12,14 +12,14 @@
 #include "support/text.h"
 #include "units/constants.h"
 
-enum { SENTENCE_DIGITS = 6 };
+enum { SENTENCE_DIGITS = 6, ROUGH_DIGITS = 3 };
 
-const char *
-figure_text (struct arena *arena, double value)
+static const char *
+digits_text (struct arena *arena, double value, int digits)
 {
   struct text text;
   text_init (&text);
-  number_write (&text, value, SENTENCE_DIGITS);
+  number_write (&text, value, digits);
   if (memchr (text.bytes, '.', text.length) && !memchr (text.bytes, 'e', text.length)) {
     while (text.bytes[text.length - 1] == '0') {
       text.length--;
@@ -31,6 +31,18 @@ figure_text (struct arena *arena, double value)
   const char *copy = arena_copy (arena, text.bytes, text.length);
   text_clear (&text);
   return copy;
+}
+
+const char *
+figure_text (struct arena *arena, double value)
+{
+  return digits_text (arena, value, SENTENCE_DIGITS);
+}
+
+const char *
+rough_text (struct arena *arena, double value)
+{
+  return digits_text (arena, value, ROUGH_DIGITS);
 }
 
 const char *
@@ -130,7 +142,7 @@ assume_barometer (struct evaluation *ev, const char *figure, const char *unit, d
             arena_format (ev->arena, "%s %s is %s", figure, unit,
                           pressure_text (ev->arena, absolute, strstr (unit, "psi") != NULL)),
             arena_format (ev->arena, "%s bar", figure_text (ev->arena, s->site_pressure / 1e5)),
-            ALTERNATIVE_NONE);
+            ALTERNATIVE_BAROMETER);
   }
 }
 
@@ -155,16 +167,28 @@ assume_vapour_pressure (struct evaluation *ev, double psat, bool over_ice)
   if (ev->describe) {
     assume (ev, MESSAGE_TAKEN_VAPOUR_PRESSURE,
             arena_format (ev->arena, "%s kPa", figure_text (ev->arena, psat / 1000)),
-            over_ice ? "ice" : "liquid", ALTERNATIVE_NONE);
+            over_ice ? "ice" : "liquid", ALTERNATIVE_VAPOUR);
   }
 }
 
 void
 assume_model (struct evaluation *ev, const char *model, double Z)
 {
-  if (ev->describe) {
-    assume (ev, MESSAGE_TAKEN_MODEL, model, figure_text (ev->arena, Z), ALTERNATIVE_IDEAL);
+  if (!ev->describe) {
+    return;
   }
+  const char *text = figure_text (ev->arena, Z);
+  for (size_t i = 0; i < ev->assumption_count; i++) {
+    struct assumption *a = &ev->assumptions[i];
+    if (a->kind == MESSAGE_TAKEN_MODEL && strcmp (a->fact[0], model) == 0) {
+      /* One line for all the Z of an answer.  */
+      if (!strstr (a->fact[1], text)) {
+        a->fact[1] = arena_format (ev->arena, "%s, %s", a->fact[1], text);
+      }
+      return;
+    }
+  }
+  assume (ev, MESSAGE_TAKEN_MODEL, model, text, ALTERNATIVE_IDEAL);
 }
 
 void

@@ -23,6 +23,19 @@ add_known (struct result *result, struct card *card, const char *name, double va
   }
 }
 
+/* Synonyms are parted by '|' in the table, because chemical names hold commas.  */
+static const char *
+with_commas (struct arena *arena, const char *synonyms)
+{
+  const char *text = "";
+  for (const char *from = synonyms; *from; ) {
+    size_t n = strcspn (from, "|");
+    text = arena_format (arena, "%s%s%.*s", text, *text ? ", " : "", (int) n, from);
+    from += n + (from[n] == '|');
+  }
+  return text;
+}
+
 void
 card_of_species (struct session *session, const struct species *s, struct result *result)
 {
@@ -50,7 +63,8 @@ card_of_species (struct session *session, const struct species *s, struct result
                                                s->cas ? s->cas : ""));
   }
   if (s->synonyms && *s->synonyms) {
-    card_add_line (result, card, arena_format (arena, "also called %s", s->synonyms));
+    card_add_line (result, card, arena_format (arena, "also called %s",
+                                               with_commas (arena, s->synonyms)));
   }
   if (s->note && *s->note) {
     card_add_line (result, card, s->note);
