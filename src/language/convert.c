@@ -145,7 +145,8 @@ convert_ratio (struct conversion *c)
     evaluation_assume (c->ev, &(struct assumption) { .kind = MESSAGE_TAKEN_BY_AMOUNT,
                                                      .fact = { "the ratio" } });
   }
-  standing.basis = "by amount";
+  /* A row cut out still has to say of what, whatever the user's label is.  */
+  standing.basis = arena_format (c->ev->arena, "%s, by amount", c->what);
   return conversion_add (c, v->moles, &standing);
 }
 

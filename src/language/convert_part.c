@@ -290,6 +290,7 @@ convert_trace (struct conversion *c)
     return conversion_mismatch (c, "a concentration is told as a share or per volume");
   }
   if (u->ratio != RATIO_NONE) {
+    standing.basis = with_oxygen (c, "by amount: the same at any temperature and pressure");
     return conversion_add (c, x * per, &standing);
   }
   struct stream own = { .T = v->T, .p = v->p, .Z = UNSTATED };

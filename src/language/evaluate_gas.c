@@ -131,7 +131,9 @@ normalised (struct evaluation *ev, const struct change_of *c, const struct analy
   }
   const char *total = total_text (ev, before, did.total_before);
   if (into) {
-    note (ev, MESSAGE_NOTE_NORMALISED_INTO, c->name, total, into->key);
+    note (ev, MESSAGE_NOTE_NORMALISED_INTO, c->name, total,
+          arena_format (ev->arena, "%s (%s%s)", into->key, did.added < 0 ? "" : "+",
+                        total_text (ev, before, did.added)));
   } else {
     note (ev, MESSAGE_NOTE_NORMALISED, c->name, total, figure_text (ev->arena, did.factor));
   }
@@ -403,6 +405,10 @@ evaluate_keeping (struct evaluation *ev, const struct node *node, struct value *
   if (!stream_keeping (ev->arena, &out->stream, kept, &out->stream, ev->fault)) {
     fault_place (ev->fault, node->at);
     return false;
+  }
+  if (ev->subject) {
+    note (ev, MESSAGE_NOTE_KEPT, ev->subject, node->a->kind == NODE_NAME ? node->a->text : "its source",
+          NULL);
   }
   return true;
 }

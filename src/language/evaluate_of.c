@@ -124,6 +124,10 @@ share_of (struct evaluation *ev, const struct node *node, const struct value *sh
       return fault_set_at (ev->fault, MESSAGE_RANGE, node->a->at, "a share below zero", NULL);
     }
     whole->stream = stream_share (&whole->stream, share->si);
+    if (ev->subject) {
+      note (ev, MESSAGE_NOTE_SHARE, ev->subject,
+            node->b->kind == NODE_NAME ? node->b->text : "what it is taken from", NULL);
+    }
     return !state || state_apply (ev, state, &whole->stream, node->at);
   }
   whole->moles *= share->si;

@@ -225,7 +225,7 @@ name_unknown (struct evaluation *ev, const struct node *node)
 
 /* ---- Defining ---- */
 
-/* Refuses a definition that would depend on itself.  */
+/* Refuses a definition that would depend on itself; FROM holds its trees.  */
 static bool
 not_circular (struct session *s, const struct statement *from, struct fault *fault)
 {
@@ -319,12 +319,10 @@ bool
 name_define (struct session *s, const struct statement *from, const char *source,
              enum name_kind kind, struct result *result, struct fault *fault)
 {
-  if (!not_circular (s, from, fault)) {
-    return false;
-  }
   struct definition *d = definition_make (s, source, kind, fault);
-  if (!d) {
+  if (!d || !not_circular (s, d->statement, fault)) {
     shift_place (fault, from, source);
+    definition_release (d);
     return false;
   }
   struct definition *before = name_find (s, d->name, strlen (d->name));

@@ -86,10 +86,23 @@ moisture_word (const struct evaluation *ev, const struct composition *gas)
 }
 
 const char *
+name_text (struct arena *arena, const char *name)
+{
+  size_t n = strlen (name);
+  bool plain = n > 0 && ((name[0] >= 'a' && name[0] <= 'z') || (name[0] >= 'A' && name[0] <= 'Z'));
+  for (size_t i = 0; i < n && plain; i++) {
+    bool letter = strchr ("abcdefghijklmnopqrstuvwxyzABCDEFGHIJKLMNOPQRSTUVWXYZ0123456789_",
+                          name[i]) != NULL;
+    plain = letter || name[i] == '+' || (name[i] == '-' && i + 1 < n);
+  }
+  return plain ? name : arena_format (arena, "\"%s\"", name);
+}
+
+const char *
 node_text (struct arena *arena, const struct statement *statement, const struct node *node)
 {
   if (node->kind == NODE_NAME) {
-    return node->text;
+    return node->quoted ? name_text (arena, node->text) : node->text;
   }
   if (node->at.line != statement->at.line || node->at.first < statement->at.first) {
     return statement->source;

@@ -24,6 +24,8 @@ struct actual { double T, p, Z; const char *model; bool customary; };
 const char *actual_text (struct arena *, const struct actual *);
 /* "dry" or "wet": has the gas water?  */
 const char *moisture_word (const struct evaluation *, const struct composition *);
+/* A name as it is typed: in quotes unless it is a plain word.  */
+const char *name_text (struct arena *, const char *name);
 /* The part of a statement's source a node covers.  */
 const char *node_text (struct arena *, const struct statement *, const struct node *);
 

@@ -20,14 +20,29 @@ enum { GAP = 3 };
 /* A column: room before and behind the decimal sign; of text: none before.  */
 struct column { size_t before, behind; bool is_text; };
 
+/* 5.00000 as 5, 0.100500 as 0.1005; a figure with an exponent stays.  */
+static void
+drop_end_zeros (struct text *figure)
+{
+  if (strchr (figure->bytes, '.') == NULL || strchr (figure->bytes, 'e') != NULL)
+    return;
+  while (figure->bytes[figure->length - 1] == '0')
+    figure->bytes[--figure->length] = '\0';
+  if (figure->bytes[figure->length - 1] == '.')
+    figure->bytes[--figure->length] = '\0';
+}
+
 static const char *
 cell_write (struct text *scratch, const struct report_style *style, const struct cell *cell)
 {
   text_empty (scratch);
   if (cell->text != NULL)
     shown_add (scratch, style, cell->text);
-  else if (cell->is_number)
+  else if (cell->is_number) {
     figure_write (scratch, style, cell->value);
+    if (cell->recorded)
+      drop_end_zeros (scratch);
+  }
   return scratch->length > 0 ? scratch->bytes : "";
 }
 

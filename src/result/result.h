@@ -33,7 +33,9 @@ struct remark {
 };
 
 /* A card: one thing with all its figures.  */
-struct cell { const char *text; double value; bool is_number; };   /* text wins; neither: blank */
+/* Text wins; neither: blank.  A `recorded` figure is one of a table: shown without the zeros that
+   would claim digits it does not have.                                                          */
+struct cell { const char *text; double value; bool is_number, recorded; };
 struct card_row { const char *name; const struct cell *cells; struct card_row *next; };
 struct card_line { const char *text; struct card_line *next; };
 struct card {

@@ -120,8 +120,8 @@ open_card (struct session *session, const struct gas_value *gas, const char *nam
                  arena_format (arena, "its parts add up to %s %s: nothing is computed from it",
                                figure_text (arena, 100 * analysis_total (a)), unit));
   card_add_line (result, card,
-                 arena_format (arena, "close it with: normalise %s, or normalise %s into N2", name,
-                               name));
+                 arena_format (arena, "close it with: normalise %s, or normalise %s into N2",
+                               name_text (arena, name), name_text (arena, name)));
 }
 
 bool

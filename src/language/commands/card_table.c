@@ -19,7 +19,10 @@ add_known (struct result *result, struct card *card, const char *name, double va
            const char *unit, const char *source)
 {
   if (!isnan (value)) {
-    card_add_figure (result, card, name, value, unit, source);
+    struct cell *cells = card_add_row (result, card, name);
+    cells[0] = (struct cell) { .is_number = true, .value = value, .recorded = true };
+    cells[1].text = unit;
+    cells[2].text = source ? source : "";
   }
 }
 
@@ -157,11 +160,9 @@ card_of_unit (struct session *session, const struct unit *unit, struct result *r
 static void
 add_conditions (struct result *result, struct card *card, struct conditions at)
 {
-  card_add_figure (result, card, "temperature", at.T - ICE_POINT, "degC", NULL);
-  card_add_figure (result, card, "pressure", at.p / 1000, "kPa(a)", NULL);
-  if (!isnan (at.humidity)) {
-    card_add_figure (result, card, "relative humidity", at.humidity * 100, "%RH", NULL);
-  }
+  add_known (result, card, "temperature", at.T - ICE_POINT, "degC", NULL);
+  add_known (result, card, "pressure", at.p / 1000, "kPa(a)", NULL);
+  add_known (result, card, "relative humidity", at.humidity * 100, "%RH", NULL);
   card_add_figure (result, card, "molar volume", ideal_volume (1, at) * 1000, "L/mol", "ideal gas");
 }
 

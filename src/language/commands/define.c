@@ -2,6 +2,7 @@
 #include "language/commands/commands.h"
 
 #include <string.h>
+#include "language/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -21,7 +22,7 @@ static const char *
 formula_of (const struct definition *d)
 {
   const char *equals = strchr (d->source, '=');
-  return equals ? equals + 1 : "";
+  return equals ? equals + 1 + strspn (equals + 1, " ") : "";
 }
 
 /* `normalise lab into N2` is `gas lab = (its formula) normalised into N2`.  */
@@ -40,10 +41,10 @@ command_normalise (struct session *session, const struct statement *s, struct re
   }
   const struct node *into = s->value->b;
   bool list = d->statement->value && d->statement->value->kind == NODE_LIST;
-  const char *source = arena_format (result->arena, "gas %.*s = %s%s%s normalised%s%s",
-                                     (int) (s->name_at.last - s->name_at.first + 1), s->name,
+  const char *source = arena_format (result->arena, "gas %s = %s%s%s normalised%s%s",
+                                     name_text (result->arena, s->name),
                                      list ? "(" : "", formula_of (d), list ? ")" : "",
-                                     into ? " into " : "", into ? into->text : "");
+                                     into ? " into " : "", into ? name_text (result->arena, into->text) : "");
   return name_define (session, s, source, NAME_GAS, result, fault);
 }
 

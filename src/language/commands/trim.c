@@ -271,8 +271,7 @@ keep (struct trim *t, struct result *result, struct fault *fault)
     struct statement from = { .kind = STATEMENT_LET, .name = d->name, .name_at = name->at,
                               .source = "", .at = t->statement->at };
     text_init (&source);
-    text_add_format (&source, "let %.*s = ", (int) (name->at.last - name->at.first + 1),
-                     node_text (t->arena, t->statement, name));
+    text_add_format (&source, "let %s = ", name_text (t->arena, name->text));
     number_write_exact (&source, t->x[i]);
     text_add_char (&source, ' ');
     text_add (&source, t->moved[i].value.unit ? t->moved[i].value.unit->spelling : "");
