@@ -2,4 +2,5 @@
 EXTRA_DIST += %D%/session.py %D%/session.sh %D%/scenarios $(session_tests:.sh=.py) $(session_tests)
 TESTS += $(session_tests)
 session_tests = \
+  %D%/refused.sh \
   %D%/scenarios.sh
