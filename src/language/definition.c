@@ -143,7 +143,7 @@ stream_body (struct evaluation *ev, const struct statement *s, struct value *out
     return false;
   }
   if (out->kind == VALUE_STREAM) {
-    if (s->value->kind == NODE_ADD && isnan (out->stream.T)) {
+    if (s->value->kind == NODE_ADD && isnan (out->stream.T) && !isnan (out->stream.p)) {
       note (ev, MESSAGE_NOTE_TEMPERATURE_UNSTATED, s->name, NULL, NULL);
     }
     return true;
@@ -238,7 +238,7 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
   struct value value;
   struct state state;
   arena_reset (d->cache);
-  d->version = 0;
+  d->fresh = false;
   result_init (&notes, d->cache, d->source);
   evaluation_init (&ev, session, &notes, fault);
   ev.arena = d->cache;
@@ -262,7 +262,7 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
   d->source_count = ev.source_count;
   d->notes = notes.notes;
   d->cautions = notes.cautions;
-  d->version = session->version;
+  d->fresh = true;
   return true;
 }
 
@@ -280,7 +280,7 @@ draws_on (const struct definition *d, const struct spread *source)
 static bool
 bring_up_to_date (struct evaluation *ev, struct definition *d, struct place at)
 {
-  if (d->version != ev->session->version) {
+  if (!d->fresh) {
     struct fault inside;
     fault_init (&inside, ev->fault->arena);
     if (!definition_refresh (ev->session, d, &inside)) {
@@ -381,7 +381,7 @@ definition_tell (struct session *session, struct definition *d, bool all, struct
   tell (result, d->cautions);
   for (size_t i = 0; i < d->need_count; i++) {
     struct definition *need = name_find (session, d->needs[i], strlen (d->needs[i]));
-    if (need && need != d && need->version == session->version) {
+    if (need && need != d && need->fresh) {
       definition_tell (session, need, all, result);
     }
   }

@@ -31,6 +31,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/evaluation.h \
   %D%/flow.c \
   %D%/flow.h \
+  %D%/mentions.c \
   %D%/names.c \
   %D%/parse.c \
   %D%/parse.h \

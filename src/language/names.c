@@ -46,7 +46,7 @@ name_place (struct session *s, const char *name, struct definition *d, size_t pl
     s->order[at] = d;
     s->count++;
   }
-  s->version++;
+  names_changed (s, name);
   return at;
 }
 
@@ -58,6 +58,7 @@ names_clear (struct session *s)
   }
   memory_release (s->order);
   map_destroy (s->names);
+  map_destroy (s->mentioned);
 }
 
 const char *
@@ -70,92 +71,6 @@ names_touching (const struct session *s, struct arena *arena, unsigned bits)
                     : s->order[i]->name;
     }
   return names;
-}
-
-/* ---- Who mentions whom ---- */
-
-static void
-visit_node (const struct node *node, void (*visit) (const struct node *, void *), void *with)
-{
-  for (; node; node = node->next) {
-    visit (node, with);
-    visit_node (node->a, visit, with);
-    visit_node (node->b, visit, with);
-    visit_node (node->c, visit, with);
-    visit_node (node->items, visit, with);
-  }
-}
-
-void
-tree_visit (const struct statement *s, void (*visit) (const struct node *, void *), void *with)
-{
-  visit_node (s->value, visit, with);
-  for (const struct stated_property *p = s->stated; p; p = p->next) {
-    visit_node (p->quantity, visit, with);
-  }
-  for (const struct target *t = s->targets; t; t = t->next) {
-    visit_node (t->counted_as, visit, with);
-    visit_node (t->state, visit, with);
-    visit_node (t->with, visit, with);
-  }
-}
-
-struct mention { const char *name; const struct node *found; };
-
-static void
-look_for (const struct node *node, void *with)
-{
-  struct mention *m = with;
-  bool name = node->kind == NODE_NAME || node->kind == NODE_PART || node->kind == NODE_SHARE;
-  if (name && !m->found && strcmp (node->text, m->name) == 0) {
-    m->found = node;
-  }
-}
-
-static const struct node *
-mention_of (const struct statement *s, const char *name)
-{
-  struct mention m = { name, NULL };
-  tree_visit (s, look_for, &m);
-  return m.found;
-}
-
-static bool
-mentions (const struct definition *d, const char *name)
-{
-  for (size_t i = 0; i < d->need_count; i++)
-    if (strcmp (d->needs[i], name) == 0) {
-      return true;
-    }
-  return false;
-}
-
-/* Does D lean on NAME, directly or through others?  */
-static bool
-leans_on (const struct session *s, const struct definition *d, const char *name)
-{
-  if (mentions (d, name)) {
-    return true;
-  }
-  for (size_t i = 0; i < d->need_count; i++) {
-    const struct definition *need = name_find (s, d->needs[i], strlen (d->needs[i]));
-    if (need && need != d && leans_on (s, need, name)) {
-      return true;
-    }
-  }
-  return false;
-}
-
-const struct node *
-tree_new_gas (const struct node *node)
-{
-  while (node && (node->kind == NODE_AT || node->kind == NODE_OF || node->kind == NODE_DRIED
-                  || node->kind == NODE_WETTED || node->kind == NODE_SATURATED
-                  || node->kind == NODE_NORMALISED || node->kind == NODE_WITHOUT)) {
-    node = node->kind == NODE_OF ? node->b : node->a;
-  }
-  return node && (node->kind == NODE_LIST || node->kind == NODE_ADD || node->kind == NODE_SUBTRACT
-                  || node->kind == NODE_KEEPING) ? node : NULL;
 }
 
 /* ---- Names nobody knows ---- */
@@ -229,7 +144,7 @@ name_unknown (struct evaluation *ev, const struct node *node)
 static bool
 not_circular (struct session *s, const struct statement *from, struct fault *fault)
 {
-  const struct node *own = mention_of (from, from->name);
+  const struct node *own = tree_mention (from, from->name);
   bool gas = from->kind == STATEMENT_GAS;
   if (own) {
     if (!known (s, from->name, strlen (from->name))) {
@@ -243,10 +158,10 @@ not_circular (struct session *s, const struct statement *from, struct fault *fau
                   gas ? "a new name, or in place: normalise NAME" : "choose a new name");
     return false;
   }
-  struct definition *before = name_find (s, from->name, strlen (from->name));
-  for (size_t i = 0; before && i < s->count; i++) {
-    struct definition *d = s->order[i];
-    const struct node *use = leans_on (s, d, from->name) ? mention_of (from, d->name) : NULL;
+  struct definition **leaning;
+  size_t n = names_leaning (s, fault->arena, from->name, &leaning);
+  for (size_t i = 0; i < n; i++) {
+    const struct node *use = tree_mention (from, leaning[i]->name);
     if (use) {
       return fault_set_at (fault, MESSAGE_SELF_REFERENCE, use->at, from->name,
                            "what it mentions leans on it already");
@@ -267,18 +182,19 @@ static bool
 dependents_hold (struct session *s, const struct statement *from, enum name_kind before,
                  struct fault *fault)
 {
-  for (size_t i = 0; i < s->count; i++) {
-    struct definition *d = s->order[i];
+  struct definition **leaning;
+  size_t n = names_leaning (s, fault->arena, from->name, &leaning);
+  for (size_t i = 0; i < n; i++) {
     struct fault inside;
     fault_init (&inside, fault->arena);
-    if (leans_on (s, d, from->name) && !definition_refresh (s, d, &inside)) {
+    if (!definition_refresh (s, leaning[i], &inside)) {
       struct text why;
       text_init (&why);
       message_write (&why, message_sentence (inside.kind), inside.fact);
       fault_set_at (fault, MESSAGE_NAME_IN_USE, from->name_at, from->name,
-                    arena_format (fault->arena, "%s depends on it as a %s", d->name,
+                    arena_format (fault->arena, "%s depends on it as a %s", leaning[i]->name,
                                   kind_name (before)));
-      fault_hint (fault, "with this, %s would fail: %s", d->name, why.bytes);
+      fault_hint (fault, "with this, %s would fail: %s", leaning[i]->name, why.bytes);
       text_clear (&why);
       return false;
     }
@@ -328,11 +244,12 @@ name_define (struct session *s, const struct statement *from, const char *source
   struct definition *before = name_find (s, d->name, strlen (d->name));
   definition_hold (before);
   size_t place = name_place (s, d->name, d, s->count);
+  names_remember_mentions (s, d);
   bool done = definition_refresh (s, d, fault);
   if (!done) {
     shift_place (fault, from, source);
   }
-  done = done && (!before || dependents_hold (s, from, before->kind, fault));
+  done = done && dependents_hold (s, from, before ? before->kind : kind, fault);
   if (done) {
     undo_note (s, d->name, before, d, place, NULL);
     definition_release (before);          /* the session's hold; the log has its own */
@@ -341,6 +258,7 @@ name_define (struct session *s, const struct statement *from, const char *source
     }
   } else {
     name_place (s, d->name, before, place);
+    names_refresh (s);
     definition_release (d);
   }
   definition_release (before);
@@ -365,7 +283,7 @@ nobody_else_needs (struct session *s, const struct node *names, const struct nod
 {
   const char *users = NULL;
   for (size_t i = 0; i < s->count; i++)
-    if (!is_listed (names, s->order[i]->name) && leans_on (s, s->order[i], name->text)) {
+    if (!is_listed (names, s->order[i]->name) && definition_leans (s, s->order[i], name->text)) {
       users = users ? arena_format (fault->arena, "%s, %s", users, s->order[i]->name)
                     : s->order[i]->name;
     }

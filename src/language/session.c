@@ -46,7 +46,7 @@ session_create (const struct session_options *options, struct fault *fault)
   s->options = *options;
   s->arena = arena_create ();
   s->names = map_create ();
-  s->version = 1;
+  s->mentioned = map_create ();
   settings_init (&s->settings);
   if (!read_tables (s, options->tables, fault)) {
     session_destroy (s);

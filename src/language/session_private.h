@@ -14,8 +14,8 @@ struct species;
 enum name_kind { NAME_GAS, NAME_STREAM, NAME_QUANTITY, NAME_REFERENCE };
 
 /* A name and its formula.  The tree was parsed from `source` into the definition's own arena and
-   is never changed; a redefinition makes another definition.  What it came to is kept until
-   something changes (`version`).                                                                */
+   is never changed; a redefinition makes another definition.  What it came to is kept until a
+   setting changes or a name it leans on.                                                        */
 struct definition {
   struct arena *arena, *cache;             /* owned */
   const char *name, *source;
@@ -25,7 +25,9 @@ struct definition {
   size_t need_count;
   unsigned holders;                        /* session and undo log */
 
-  unsigned long version;                   /* of the session, when the cache was made; 0: none */
+  bool fresh;                              /* the cache holds */
+  unsigned long looked;                    /* the last search that came by, and what it found */
+  bool leans;
   struct value value;
   struct state state;                      /* of a reference */
   unsigned touched;
@@ -55,8 +57,9 @@ struct session {
   const struct composition *air;           /* as predefined */
   struct arena *arena;                     /* what lasts: tables' extras, texts of settings */
   struct settings settings;
-  unsigned long version;                   /* grows with every change */
   struct map *names;                       /* of struct definition */
+  struct map *mentioned;                   /* every name a definition ever mentioned */
+  unsigned long look;                      /* counts searches through the definitions */
   struct definition **order;               /* as first defined */
   size_t count, room;
   struct change *changes;
@@ -106,6 +109,22 @@ void names_clear (struct session *);
 /* The names of definitions whose figures lean on what BITS stand for: "raw, feed"; null: none.  */
 const char *names_touching (const struct session *, struct arena *, unsigned bits);
 
+/* ---- Who leans on whom (mentions.c) ---- */
+
+/* Does D lean on NAME, directly or through others?  */
+bool definition_leans (struct session *, struct definition *, const char *name);
+/* All that lean on NAME, in the order of the session, into an array in ARENA; how many.  */
+size_t names_leaning (struct session *, struct arena *, const char *name,
+                      struct definition ***leaning);
+void names_remember_mentions (struct session *, struct definition *);
+/* NAME (null: a setting) changed: what leans on it is to be worked out again, ...  */
+void names_changed (struct session *, const char *name);
+/* ... which this does now, in the order of the session, so that no chain of names is worked out
+   from its far end.                                                                             */
+void names_refresh (struct session *);
+
+/* The first node of a statement's trees that mentions NAME, or null.  */
+const struct node *tree_mention (const struct statement *, const char *name);
 /* Calls VISIT for every node of a statement's trees.  */
 void tree_visit (const struct statement *, void (*visit) (const struct node *, void *), void *);
 

@@ -52,7 +52,7 @@ take_back (struct session *s, const struct change *c)
     definition_release (c->after);        /* and the session's hold on what went */
   } else {
     s->settings = c->settings;
-    s->version++;
+    names_changed (s, NULL);
   }
 }
 
@@ -70,6 +70,7 @@ take_back_group (struct session *s, struct arena *arena)
     definition_release (c.before);
     definition_release (c.after);
   }
+  names_refresh (s);
   return what;
 }
 

@@ -228,7 +228,8 @@ command_set (struct session *session, const struct statement *typed, struct resu
     }
   }
   session->settings = new;
-  session->version++;
+  names_changed (session, NULL);
+  names_refresh (session);
   undo_note (session, NULL, NULL, NULL, 0, &before);
   say_what_moves (session, bits, result);
   return true;

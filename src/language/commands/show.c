@@ -15,7 +15,7 @@ static bool
 show_definition (struct session *session, const struct statement *s, struct definition *d,
                  struct result *result, struct fault *fault)
 {
-  if (d->version != session->version && !definition_refresh (session, d, fault)) {
+  if (!d->fresh && !definition_refresh (session, d, fault)) {
     fault->at = s->name_at;
     return false;
   }
