@@ -90,6 +90,9 @@ add_source (const struct evaluation *ev, const struct statement *s, const struct
   return true;
 }
 
+/* What moves by less does not depend on the source: the figures differ by rounding alone.  */
+#define ROUNDING 1e-12
+
 static bool
 uncertainties (const struct evaluation *ev, const struct statement *s, struct answer *answers,
                size_t count)
@@ -105,7 +108,8 @@ uncertainties (const struct evaluation *ev, const struct statement *s, struct an
     }
   size_t i = 0;
   for (struct answer *a = answers; a && i < count; a = a->next, i++) {
-    a->uncertainty = variance[i] > 0 ? sqrt (variance[i]) : UNSTATED;
+    double u = sqrt (variance[i]);
+    a->uncertainty = u > ROUNDING * fabs (a->value) ? u : UNSTATED;
   }
   return true;
 }
