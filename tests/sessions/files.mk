@@ -1,7 +1,15 @@
 # Whole sessions through the program, read back by scripts in Python that speak TAP themselves.
-EXTRA_DIST += %D%/session.py %D%/session.sh %D%/scenarios %D%/weights2001 $(session_tests:.sh=.py) $(session_tests)
+EXTRA_DIST += \
+  %D%/contract.gw \
+  %D%/scenarios \
+  %D%/session.py \
+  %D%/session.sh \
+  %D%/weights2001 \
+  $(session_tests) \
+  $(session_tests:.sh=.py)
 TESTS += $(session_tests)
 session_tests = \
+  %D%/contract.sh \
   %D%/figures.sh \
   %D%/refused.sh \
   %D%/scenarios.sh
