@@ -17,7 +17,7 @@ tablesdir = $(pkgdatadir)/tables
 dist_tables_DATA = $(tables)
 
 demodir = $(pkgdatadir)/tables/demo
-dist_demo_DATA =
+dist_demo_DATA = %D%/demo/morning.gw
 
 # Made from the tables, in the build tree only: every table as text, the kinds of message, and
 # what stands behind each kind.

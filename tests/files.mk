@@ -39,6 +39,7 @@ with_language = %D%/libtest.a $(upto_language) $(CUNIT_LIBS) $(GSL_LIBS)
 with_report = %D%/libtest.a $(upto_report) $(CUNIT_LIBS) $(GSL_LIBS)
 with_shell = %D%/libtest.a $(upto_shell) $(CUNIT_LIBS) $(GSL_LIBS)
 
+include %D%/documents/files.mk
 include %D%/modules/support/files.mk
 include %D%/modules/units/files.mk
 include %D%/modules/gas/files.mk

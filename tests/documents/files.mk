@@ -1,0 +1,8 @@
+# Documents: help, manual pages, README and demo show what the program does.
+EXTRA_DIST += \
+  %D%/examples.sh \
+  %D%/morning.golden \
+  %D%/preamble.gw \
+  %D%/renew.sh \
+  %D%/replay.awk
+TESTS += %D%/examples.sh
