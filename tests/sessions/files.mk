@@ -12,4 +12,5 @@ session_tests = \
   %D%/contract.sh \
   %D%/figures.sh \
   %D%/refused.sh \
+  %D%/roundtrips.sh \
   %D%/scenarios.sh
