@@ -201,7 +201,7 @@ other_of (struct arena *arena, const struct assumption *a, struct other *o)
   return false;
 }
 
-/* The largest relative change the alternative makes to any figure; UNSTATED if it cannot be told.  */
+/* The largest relative change the alternative makes to any figure; UNSTATED: cannot be told.  */
 static double
 effect_of (const struct evaluation *ev, const struct statement *s, const struct figures *figures,
            const struct other *other)

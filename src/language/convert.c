@@ -156,7 +156,7 @@ convert_value (struct evaluation *ev, const struct value *value, const struct ta
 {
   struct conversion c = { .ev = ev, .value = value, .what = subject->what, .figures = figures,
                           .at = subject->at, .subject_at = subject->at,
-                          .state = { .T = UNSTATED, .p = UNSTATED, .Z = UNSTATED, .oxygen = UNSTATED } };
+                          .state = state_empty (subject->at) };
   if (target ? !settle_target (&c, target) : !settle_unit (&c, value)) {
     return false;
   }
@@ -241,8 +241,8 @@ oxygen_factor (struct conversion *c, double measured, const char *what, double *
   }
   if (!(reference < A) || !(measured < NEAREST_TO_AIR * A)) {
     return fault_set_at (ev->fault, MESSAGE_RANGE, c->at,
-                         arena_format (ev->arena, "oxygen of %s is too near to that of air, %s, for "
-                                       "a correction",
+                         arena_format (ev->arena, "oxygen of %s is too near to that of air, %s, "
+                                       "for a correction",
                                        share_text (ev->arena, reference < A ? measured : reference),
                                        share_text (ev->arena, A)), NULL);
   }
@@ -302,7 +302,8 @@ conversion_volume (struct conversion *c, const struct composition *gas,
   }
   bool own = !c->has_state || (isnan (c->state.T) && isnan (c->state.p));
   struct volume_question q = {
-    gas, isnan (c->state.T) ? fallback->T : c->state.T, isnan (c->state.p) ? fallback->p : c->state.p,
+    gas, isnan (c->state.T) ? fallback->T : c->state.T,
+    isnan (c->state.p) ? fallback->p : c->state.p,
     own && isnan (c->state.Z) ? fallback->Z : c->state.Z, (c->words & WORD_IDEAL) != 0
   };
   if (isnan (q.T) || isnan (q.p)) {

@@ -119,7 +119,8 @@ real_volume_share (struct conversion *c, const struct host *host, double *phi)
   }
   for (size_t i = 0; i < host->gas->count; i++) {
     const struct species *species = host->gas->species[i];
-    struct volume_question q = { composition_pure (c->ev->arena, species), at.T, at.p, UNSTATED, false };
+    struct volume_question q = { composition_pure (c->ev->arena, species), at.T, at.p, UNSTATED,
+                                 false };
     double Vm, Z;
     const char *model;
     if (!actual_molar_volume (c->ev, &q, &Vm, &Z, &model)) {

@@ -110,7 +110,8 @@ ideal_moles_per (struct conversion *c, const struct measure *m, double T, double
   if (isnan (T) || isnan (p)) {
     fault_set_at (ev->fault, MESSAGE_STATE_MISSING, c->at,
                   target ? c->unit_text : "the volume typed", NULL);
-    fault_hint (ev->fault, target ? "%s in %s at 20 degC, 1 bar(a)" : "%s at 20 degC, 1 bar(a) in %s",
+    fault_hint (ev->fault,
+                target ? "%s in %s at 20 degC, 1 bar(a)" : "%s at 20 degC, 1 bar(a) in %s",
                 c->what, c->unit_text);
     return false;
   }

@@ -60,7 +60,9 @@ each_part (struct conversion *c, struct value *part, const struct composition *g
     part->part = species->key;
     part->moles = per * gas->fraction[i];
     part->mass = part->moles * species->molar_mass;
-    c->what = c->ev->describe ? arena_format (c->ev->arena, "%s of %s", species->key, whole) : whole;
+    if (c->ev->describe) {
+      c->what = arena_format (c->ev->arena, "%s of %s", species->key, whole);
+    }
     if (!convert_part (c)) {
       return false;
     }

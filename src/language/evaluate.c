@@ -158,7 +158,7 @@ known_gas (struct evaluation *ev, const struct node *node, const struct gas_valu
   case SPECIES_KEY:
   case SPECIES_SYNONYM:
   case SPECIES_PLAIN_FORMULA:
-    note_formula_only (ev, species);
+    note_species (ev, species);
     *gas = gas_of_composition (ev, composition_pure (ev->arena, species), node->text);
     return *gas != NULL;
   case SPECIES_AMBIGUOUS:

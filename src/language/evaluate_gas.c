@@ -243,7 +243,7 @@ wet_gas (struct evaluation *ev, const struct change_of *c, const struct state *s
 static bool
 moisture_of (struct evaluation *ev, const struct node *node, struct state *state)
 {
-  *state = (struct state) { .T = UNSTATED, .p = UNSTATED, .Z = UNSTATED, .oxygen = UNSTATED, .at = node->at };
+  *state = state_empty (node->at);
   if (node->kind == NODE_DRIED) {
     state->moisture = MOISTURE_DRY;
     return true;
@@ -407,7 +407,8 @@ evaluate_keeping (struct evaluation *ev, const struct node *node, struct value *
     return false;
   }
   if (ev->subject) {
-    note (ev, MESSAGE_NOTE_KEPT, ev->subject, node->a->kind == NODE_NAME ? node->a->text : "its source",
+    note (ev, MESSAGE_NOTE_KEPT, ev->subject,
+          node->a->kind == NODE_NAME ? node->a->text : "its source",
           NULL);
   }
   return true;

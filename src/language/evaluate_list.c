@@ -56,7 +56,7 @@ component_named (struct evaluation *ev, const struct node *name, struct componen
   case SPECIES_KEY:
   case SPECIES_SYNONYM:
   case SPECIES_PLAIN_FORMULA:
-    note_formula_only (ev, out->species);
+    note_species (ev, out->species);
     return true;
   case SPECIES_AMBIGUOUS:
     if (!strchr (name->text, '+') || !(out->gas = peak (ev, name->text))) {
@@ -257,7 +257,8 @@ from_real_volumes (struct evaluation *ev, const struct node *list, size_t n,
     double phi = parts[i].basis == AMOUNT_REST ? 1 - total : parts[i].amount;
     if (phi < 0) {
       return fault_set_at (ev->fault, MESSAGE_GAS_TOTAL, list->at,
-                           arena_format (ev->arena, "%s vol%%", figure_text (ev->arena, 100 * total)),
+                           arena_format (ev->arena, "%s vol%%",
+                                         figure_text (ev->arena, 100 * total)),
                            NULL);
     }
     parts[i].basis = AMOUNT_MOLES;

@@ -116,7 +116,8 @@ by_water (struct evaluation *ev, const struct question *q, struct value *out)
     const char *p = pressure_text (ev->arena, q->p, false);
     out->basis = humidity ? arena_format (ev->arena, "%s, %s, over liquid water",
                                           temperature_text (ev->arena, q->T, false), p)
-                          : arena_format (ev->arena, "%s, over %s", p, ice ? "ice" : "liquid water");
+                          : arena_format (ev->arena, "%s, over %s", p,
+                                          ice ? "ice" : "liquid water");
   }
   return true;
 }

@@ -60,7 +60,7 @@ struct evaluation {
   unsigned touched;
   size_t assumption_count, assumption_room, source_count, source_room, used_count, used_room;
   struct assumption *assumptions;           /* what was taken, each once */
-  const struct spread **sources;            /* uncertain figures met; the address tells them apart */
+  const struct spread **sources;            /* uncertain figures met, told apart by their address */
   struct definition **used;                 /* definitions met, each once */
 };
 
@@ -129,9 +129,10 @@ struct state {
   enum moisture_kind moisture;
   double moist;                             /* humidity, K, or mol/mol of the wet gas */
   bool ideal, real;
-  const char *text;                         /* "20 degC, 1 bar(a)": T and p as typed */
   struct place at, T_at, p_at;
 };
+/* A state that says nothing, standing AT.  */
+struct state state_empty (struct place at);
 bool evaluate_state (struct evaluation *, const struct node *, struct state *) MUST_CHECK;
 /* The share of water, of the wet gas, that a figure means: mol%, ppm or mg/Nm3.  */
 bool evaluate_water (struct evaluation *, const struct node *, double *y) MUST_CHECK;

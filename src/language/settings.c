@@ -13,15 +13,20 @@ settings_init (struct settings *s)
 {
   *s = (struct settings) {
     .family = {
-      [FAMILY_NONE] = { { UNSTATED, UNSTATED, UNSTATED }, "", false, NULL },
+      [FAMILY_NONE] = { { UNSTATED, UNSTATED, UNSTATED },
+                        "", false, NULL },
       /* DIN 1343.  */
-      [FAMILY_NORMAL] = { { ICE_POINT, STANDARD_ATMOSPHERE, UNSTATED }, "0 degC, 101.325 kPa", false, NULL },
+      [FAMILY_NORMAL] = { { ICE_POINT, STANDARD_ATMOSPHERE, UNSTATED },
+                        "0 degC, 101.325 kPa", false, NULL },
       /* ISO 13443.  */
-      [FAMILY_STANDARD] = { { 288.15, STANDARD_ATMOSPHERE, UNSTATED }, "15 degC, 101.325 kPa", false, NULL },
+      [FAMILY_STANDARD] = { { 288.15, STANDARD_ATMOSPHERE, UNSTATED },
+                        "15 degC, 101.325 kPa", false, NULL },
       /* 60 degF = 519.67/1.8 K and 14.696 psia (GPA 2145-16).  */
-      [FAMILY_SCF] = { { 519.67 / 1.8, 14.696 * PSI, UNSTATED }, "60 degF, 14.696 psia", false, NULL },
+      [FAMILY_SCF] = { { 519.67 / 1.8, 14.696 * PSI, UNSTATED },
+                        "60 degF, 14.696 psia", false, NULL },
       /* SEMI E12.  */
-      [FAMILY_SCCM] = { { ICE_POINT, STANDARD_ATMOSPHERE, UNSTATED }, "0 degC, 101.325 kPa", false, NULL },
+      [FAMILY_SCCM] = { { ICE_POINT, STANDARD_ATMOSPHERE, UNSTATED },
+                        "0 degC, 101.325 kPa", false, NULL },
     },
     .site_pressure = STANDARD_ATMOSPHERE,
     .site_altitude = UNSTATED,

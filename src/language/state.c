@@ -181,14 +181,12 @@ name_item (struct evaluation *ev, struct state *state, const struct node *node)
   const char *candidates;
   switch (reference_find (ev->session->references, node->text, n, &found, &candidates)) {
   case REFERENCE_ONE: {
-    struct state named = { found->at.T, found->at.p, UNSTATED, UNSTATED, MOISTURE_NONE, UNSTATED,
-                           .text = NULL };
-    if (!isnan (found->at.humidity)) {
+    struct state named = state_empty (node->at);
+    named.T = found->at.T;
+    named.p = found->at.p;
+    if (found->at.humidity > 0) {
       named.moisture = MOISTURE_HUMIDITY;
       named.moist = found->at.humidity;
-      if (found->at.humidity <= 0) {
-        named.moisture = MOISTURE_NONE;
-      }
     }
     return merge (ev, state, &named, node->at);
   }
@@ -272,11 +270,17 @@ add_item (struct evaluation *ev, struct state *state, const struct node *node)
   return node->kind == NODE_NAME ? name_item (ev, state, node) : figure_item (ev, state, node);
 }
 
+struct state
+state_empty (struct place at)
+{
+  return (struct state) { .T = UNSTATED, .p = UNSTATED, .Z = UNSTATED, .oxygen = UNSTATED,
+                          .moist = UNSTATED, .at = at };
+}
+
 bool
 evaluate_state (struct evaluation *ev, const struct node *node, struct state *state)
 {
-  *state = (struct state) { .T = UNSTATED, .p = UNSTATED, .Z = UNSTATED, .oxygen = UNSTATED, .moist = UNSTATED,
-                            .at = node->at };
+  *state = state_empty (node->at);
   for (const struct node *item = node->items; item; item = item->next)
     if (!add_item (ev, state, item)) {
       fault_place (ev->fault, item->at);

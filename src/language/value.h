@@ -14,7 +14,7 @@
 
 struct analysis; struct composition; struct node; struct species;
 
-/* A figure nobody stated.  */
+/* A figure nobody stated; clang wants the cast.  */
 #define UNSTATED ((double) NAN)
 
 enum value_kind {

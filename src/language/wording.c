@@ -137,7 +137,8 @@ assume_site_pressure (struct evaluation *ev)
     return;
   }
   const struct settings *s = ev->settings;
-  const char *p = arena_format (ev->arena, "%s bar", figure_text (ev->arena, s->site_pressure / 1e5));
+  const char *bar = figure_text (ev->arena, s->site_pressure / 1e5);
+  const char *p = arena_format (ev->arena, "%s bar", bar);
   if (!isnan (s->site_altitude)) {
     assume (ev, MESSAGE_TAKEN_BAROMETER_ALTITUDE, p, s->site_altitude_text, ALTERNATIVE_SITE);
   } else if (!s->is_set[SETTING_SITE_PRESSURE]) {
@@ -215,12 +216,17 @@ note (struct evaluation *ev, enum message kind, const char *fact1, const char *f
 }
 
 void
-note_formula_only (struct evaluation *ev, const struct species *species)
+note_species (struct evaluation *ev, const struct species *species)
 {
-  if (ev->result && species->origin == SPECIES_FORMULA) {
+  if (!ev->result) {
+    return;
+  }
+  if (species->origin == SPECIES_FORMULA) {
     note (ev, MESSAGE_NOTE_FORMULA_ONLY, species->key,
-          arena_format (ev->arena, "%s g/mol", figure_text (ev->arena, species->molar_mass * 1000)),
-          NULL);
+          arena_format (ev->arena, "%s g/mol",
+                        figure_text (ev->arena, species->molar_mass * 1000)), NULL);
+  } else if (species->origin == SPECIES_USERS) {
+    note (ev, MESSAGE_NOTE_TABLE_USERS, species->key, species->source, NULL);
   }
 }
 

@@ -19,7 +19,7 @@ const char *share_text (struct arena *, double mole_fraction);
 const char *temperature_text (struct arena *, double T, bool customary);
 /* "1.03825 bar(a)" or "14.6959 psia".  */
 const char *pressure_text (struct arena *, double p, bool customary);
-/* T, p, Z and the model of an actual volume: "38 degC, 1.03825 bar(a), Z 0.99731, Peng-Robinson". */
+/* T, p, Z and the model of an actual volume: "38 degC, 1.03825 bar(a), Z 0.997, ideal gas".  */
 struct actual { double T, p, Z; const char *model; bool customary; };
 const char *actual_text (struct arena *, const struct actual *);
 /* "dry" or "wet": has the gas water?  */
@@ -36,7 +36,8 @@ void assume_site_pressure (struct evaluation *);
 void assume_family (struct evaluation *, enum reference_family);
 void assume_vapour_pressure (struct evaluation *, double psat, bool over_ice);
 void assume_model (struct evaluation *, const char *model, double Z);
-void note_formula_only (struct evaluation *, const struct species *);
+/* Of a component: known by its formula alone, or from the user's own table.  */
+void note_species (struct evaluation *, const struct species *);
 /* A note or caution, if anybody listens.  Facts may be null.  */
 void note (struct evaluation *, enum message, const char *fact1, const char *fact2,
            const char *fact3);

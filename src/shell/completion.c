@@ -128,6 +128,14 @@ offer_rest (struct search *search, const char *text)
   }
 }
 
+/* The same for a name that is read without quotes.  */
+static void
+offer_rest_of_name (const char *name, void *with)
+{
+  if (strchr (name, ' ') != NULL)
+    offer_rest (with, name);
+}
+
 static void
 offer_rests (struct search *search, const char *const list[])
 {
@@ -339,6 +347,8 @@ offer_at_place (struct search *search)
       offer_all (search, further_words);
       offer_rests (search, properties);
       offer_rests (search, state_words);
+      species_each_name (session_vocabulary (search->session)->species, offer_rest_of_name,
+                         search);
       break;
     case PLACE_NOTHING:
       break;

@@ -1,5 +1,6 @@
 #include "config.h"
 
+#include <dirent.h>
 #include <errno.h>
 #include <locale.h>
 #include <stdbool.h>
@@ -56,18 +57,36 @@ run_scripts (struct script *script, const struct options *options)
     script->failed = script->failed || script->output->error != 0;
 }
 
+/* Is there no folder of that name, or none that can be read?  The reason; null if all is well.  */
+static const char *
+folder_trouble (const char *name)
+{
+  DIR *folder = opendir (name);
+
+  if (folder == NULL)
+    return descriptor_reason (errno);
+  closedir (folder);
+  return NULL;
+}
+
 /* Runs everything in a new session.  True if all went well.  */
 static bool
 run_session (const struct options *options, struct output *output, bool at_prompt)
 {
   const struct session_options about = { .tables = options->tables,
                                          .interrupted = interrupt_pending };
-  struct arena *arena = arena_create ();
+  struct arena *arena;
   struct session *session;
+  const char *trouble;
   struct script script;
   struct fault fault;
   bool good = false;
 
+  if (about.tables != NULL && (trouble = folder_trouble (about.tables)) != NULL) {
+    output_file_fault (output, about.tables, trouble);
+    return false;
+  }
+  arena = arena_create ();
   fault_init (&fault, arena);
   session = session_create (&about, &fault);
   if (session == NULL) {

@@ -18,11 +18,20 @@
 
 enum { PROMPT_WIDTH = 6 };                      /* the margin of what is typed */
 
+/* Digits are a setting.  */
+static void
+take_digits (struct script *script)
+{
+  script->output->style.digits = session_digits (script->session);
+  script->output->fault_style.digits = script->output->style.digits;
+}
+
 void
 script_init (struct script *script, struct session *session, struct output *output)
 {
   *script = (struct script) { .session = session, .output = output,
                               .arena = arena_create () };
+  take_digits (script);
 }
 
 void
@@ -88,8 +97,7 @@ run_statement (struct script *script, const struct statement *statement, bool *a
   result_init (&result, script->arena, statement->source);
   if (!session_run (script->session, statement, &result, fault))
     return false;
-  script->output->style.digits = session_digits (script->session);
-  script->output->fault_style.digits = script->output->style.digits;
+  take_digits (script);
   *answered = *answered || !result_is_empty (&result);
   output_result (script->output, &result, is_listing (statement));
   script->quit = result.quit;
@@ -126,18 +134,16 @@ script_run_line (struct script *script, const struct script_line *line)
     fault_init (&fault, script->arena);
     if (!parser_next (parser, &statement, &fault)) {
       tell_fault (script, line, &fault, parser_source (parser), answered);
+    } else if (statement == NULL) {
       break;
-    }
-    if (statement == NULL)
-      break;
-    if (statement->kind == STATEMENT_EMPTY)
+    } else if (statement->kind == STATEMENT_EMPTY
+               || run_statement (script, statement, &answered, &fault)) {
       continue;
-    if (!run_statement (script, statement, &answered, &fault)) {
-      if (!is_stopped (line))
-        tell_fault (script, line, &fault, statement->source, answered);
-      if (!may_go_on (script, parser))
-        break;
+    } else if (!is_stopped (line)) {
+      tell_fault (script, line, &fault, statement->source, answered);
     }
+    if (!may_go_on (script, parser))
+      break;
   }
 }
 

@@ -80,7 +80,8 @@ card_of_stream (struct session *session, const struct stream *stream, const char
     { "mass", "kg", 0 }, { "mass, dry", "kg", WORD_DRY }, { "moles", "kmol", 0 },
     { "normal volume", "Nm3", 0 }, { "normal volume, dry", "Nm3", WORD_DRY },
     { "standard volume", "Sm3", 0 }, { "standard cubic feet", "scf", 0 } };
-  static const struct row actual[] = { { "actual volume", "m3/h", 0 }, { "actual volume", "m3", 0 } };
+  static const struct row actual[] = { { "actual volume", "m3/h", 0 },
+                                       { "actual volume", "m3", 0 } };
   struct value value = value_number (0);
   struct evaluation ev;
   bool wet = composition_fraction (stream->gas, session->water) > 0;

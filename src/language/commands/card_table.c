@@ -45,17 +45,21 @@ card_of_species (struct session *session, const struct species *s, struct result
   (void) session;
   struct arena *arena = result->arena;
   struct card *card = result_card (result, s->key,
-                                   arena_format (arena, "component, %s", s->name ? s->name : s->key),
+                                   arena_format (arena, "component, %s",
+                                                 s->name ? s->name : s->key),
                                    3, blank);
   add_known (result, card, "molar mass", s->molar_mass * 1000, "g/mol",
-             s->origin == SPECIES_STATED ? "as stated" : "from the formula and tables/elements.tsv");
-  add_known (result, card, "critical temperature", s->critical_temperature - ICE_POINT, "degC", NULL);
+             s->origin == SPECIES_STATED ? "as stated"
+                                         : "from the formula and tables/elements.tsv");
+  add_known (result, card, "critical temperature", s->critical_temperature - ICE_POINT, "degC",
+             NULL);
   add_known (result, card, "critical pressure", s->critical_pressure / 1e5, "bar(a)", NULL);
   add_known (result, card, "critical volume", s->critical_molar_volume * 1e6, "cm3/mol", NULL);
   add_known (result, card, "acentric factor", s->acentric_factor, "", NULL);
   add_known (result, card, s->sublimes ? "sublimation point" : "boiling point",
              s->boiling_point - ICE_POINT, "degC", "at 101.325 kPa");
-  add_known (result, card, "8 h exposure limit", s->exposure_limit * 1e6, "ppm", s->exposure_source);
+  add_known (result, card, "8 h exposure limit", s->exposure_limit * 1e6, "ppm",
+             s->exposure_source);
   add_known (result, card, "lower flammable limit", s->lower_flammable * 100, "vol%",
              s->flammable_source);
   add_known (result, card, "upper flammable limit", s->upper_flammable * 100, "vol%",

@@ -44,7 +44,8 @@ command_normalise (struct session *session, const struct statement *s, struct re
   const char *source = arena_format (result->arena, "gas %s = %s%s%s normalised%s%s",
                                      name_text (result->arena, s->name),
                                      list ? "(" : "", formula_of (d), list ? ")" : "",
-                                     into ? " into " : "", into ? name_text (result->arena, into->text) : "");
+                                     into ? " into " : "",
+                                     into ? name_text (result->arena, into->text) : "");
   return name_define (session, s, source, NAME_GAS, result, fault);
 }
 

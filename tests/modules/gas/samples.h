@@ -14,6 +14,9 @@
 #define SAMPLE(key_, g_per_mol, exposure, lower)                                        \
   { .key = key_, .name = key_, .molar_mass = (g_per_mol) * 1e-3,                          \
     .exposure_limit = (exposure), .lower_flammable = (lower), .flags = "" }
+#define TOXIC(key_, g_per_mol, exposure, lower)                                         \
+  { .key = key_, .name = key_, .molar_mass = (g_per_mol) * 1e-3,                          \
+    .exposure_limit = (exposure), .lower_flammable = (lower), .flags = "toxic" }
 #define NONE ((double) NAN)
 
 enum { H2, CH4, H2O, CO, N2, O2, Ar, CO2, H2S, C2H4, C2H6, C3H6, C3H8, C4H10, SO2, NO, NO2, NH3,
@@ -26,21 +29,21 @@ static const struct species sample[SAMPLES] = {
   [H2] = SAMPLE ("H2", 2.016, NONE, 0.040),
   [CH4] = SAMPLE ("CH4", 16.043, NONE, 0.044),
   [H2O] = SAMPLE ("H2O", 18.015, NONE, NONE),
-  [CO] = SAMPLE ("CO", 28.010, 20e-6, 0.109),
+  [CO] = TOXIC ("CO", 28.010, 20e-6, 0.109),
   [N2] = SAMPLE ("N2", 28.014, NONE, NONE),
   [O2] = SAMPLE ("O2", 31.998, NONE, NONE),
   [Ar] = SAMPLE ("Ar", 39.95, NONE, NONE),
   [CO2] = SAMPLE ("CO2", 44.009, 5000e-6, NONE),
-  [H2S] = SAMPLE ("H2S", 34.076, 5e-6, 0.040),
+  [H2S] = TOXIC ("H2S", 34.076, 5e-6, 0.040),
   [C2H4] = SAMPLE ("C2H4", 28.054, NONE, NONE),
   [C2H6] = SAMPLE ("C2H6", 30.070, NONE, NONE),
   [C3H6] = SAMPLE ("C3H6", 42.081, NONE, NONE),
   [C3H8] = SAMPLE ("C3H8", 44.097, NONE, 0.017),
   [C4H10] = SAMPLE ("nC4", 58.124, NONE, NONE),
-  [SO2] = SAMPLE ("SO2", 64.058, 0.5e-6, NONE),
-  [NO] = SAMPLE ("NO", 30.006, 2e-6, NONE),
-  [NO2] = SAMPLE ("NO2", 46.005, 0.5e-6, NONE),
-  [NH3] = SAMPLE ("NH3", 17.031, 20e-6, NONE)
+  [SO2] = TOXIC ("SO2", 64.058, 0.5e-6, NONE),
+  [NO] = TOXIC ("NO", 30.006, 2e-6, NONE),
+  [NO2] = TOXIC ("NO2", 46.005, 0.5e-6, NONE),
+  [NH3] = TOXIC ("NH3", 17.031, 20e-6, NONE)
 };
 
 /* Marsaglia, J. Stat. Software 8 (2003) 14: xorshift, shifts 13, 7, 17.  */

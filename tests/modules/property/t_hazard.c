@@ -29,14 +29,11 @@ raw_digester_gas (void)
     { &sample[H2S], 0.085 }
   };
   size_t count = find (5, parts);
-  NEED (count == 2);                     /* 0.4 % of oxygen burns nothing */
+  NEED (count == 1);                     /* 0.4 % of oxygen burns nothing; CO2 only asphyxiates */
   SAME_INT (found[0].kind, HAZARD_TOXIC);
   CHECK (found[0].species == &sample[H2S]);
   NEAR (found[0].ratio, 170, 1e-12);     /* 850 ppm over 5 ppm, 2009/161/EU */
   NEAR (found[0].limit, 5e-6, 0);
-  SAME_INT (found[1].kind, HAZARD_TOXIC);
-  CHECK (found[1].species == &sample[CO2]);
-  NEAR (found[1].ratio, 79.83, 1e-12);
 }
 
 /* Le Chatelier by hand: 1.1/4.4 + 0.4/4.0 = 0.35; the two fuels together 1.5/0.35 = 4.285714 %.  */
@@ -97,8 +94,7 @@ oxygen_rich_or_poor (void)
   const struct part flue[] = {           /* 12 % of CO2: no air to breathe, but not air-like */
     { &sample[O2], 11 }, { &sample[N2], 77 }, { &sample[CO2], 12 }
   };
-  NEED (find (3, flue) == 1);
-  SAME_INT (found[0].kind, HAZARD_TOXIC);
+  SAME_INT (find (3, flue), 0);
 }
 
 static void
@@ -108,7 +104,7 @@ harmless_gases (void)
     const struct part parts[] = { { &sample[i], 1 } };
     size_t count = find (1, parts);
     test_about ("pure %s", sample[i].key);
-    SAME_INT (count, sample[i].exposure_limit > 0 || i == O2 ? 1 : 0);
+    SAME_INT (count, *sample[i].flags || i == O2 ? 1 : 0);
   }
 }
 
