@@ -116,6 +116,18 @@ tell "$(LC_ALL=C.UTF-8 "$GASWRIGHT" morning.gw > morning.out 2> morning.err || e
 tell "$("$GASWRIGHT" --format json morning.gw > morning.json || echo "exit status $?"
   [ -s morning.json ] || echo "nothing printed")" "the morning runs in JSON"
 
+# ---- DEVELOPERS.md ----
+
+tell "$(while read -r layer; do
+  grep -q "^\*\*$layer\*\* " "$top/DEVELOPERS.md" || echo "$layer"
+done < "$top/src/layers")" "DEVELOPERS.md has a paragraph for each layer"
+# shellcheck disable=SC2016  # the marks of a name, no command
+tell "$(grep -o '`[a-z.][A-Za-z_./-]*/[A-Za-z_./-]*[a-z]`' "$top/DEVELOPERS.md" | tr -d '`' | grep -v NAME |
+  while read -r name; do
+    [ -e "$top/$name" ] || [ -e "$top/src/$name" ] || [ -e "$top/src/language/$name" ] ||
+      [ "$name" = .ci/run ] || echo "$name"
+  done)" "the files DEVELOPERS.md names exist"
+
 # ---- Form ----
 
 if command -v "${MANDOC:-mandoc}" > out 2>&1; then
