@@ -29,7 +29,7 @@ convert_pressure (struct conversion *c)
     return conversion_add (c, p, &standing);
   }
   if (v->measure.sort == UNIT_SCALE && v->unit
-      && !quantity_pressure (ev, v, v->unit->spelling, &p)) {
+      && !quantity_pressure (ev, v, c->what, &p)) {
     return false;
   }
   switch (c->unit->sort) {

@@ -141,6 +141,7 @@ assume_site_pressure (struct evaluation *ev)
   const char *p = arena_format (ev->arena, "%s bar", bar);
   if (!isnan (s->site_altitude)) {
     assume (ev, MESSAGE_TAKEN_BAROMETER_ALTITUDE, p, s->site_altitude_text, ALTERNATIVE_SITE);
+    note (ev, MESSAGE_NOTE_BAROMETER_ESTIMATED, NULL, NULL, NULL);
   } else if (!s->is_set[SETTING_SITE_PRESSURE]) {
     assume (ev, MESSAGE_TAKEN_BAROMETER, p, NULL, ALTERNATIVE_SITE);
   }
