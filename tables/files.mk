@@ -13,8 +13,19 @@ tables = \
   %D%/species.tsv \
   %D%/units.tsv
 
+# The figures of the equations of reference: built into the program as numbers (src/eos).
+equation_tables = \
+  %D%/aga8_components.tsv \
+  %D%/aga8_pairs.tsv \
+  %D%/aga8_terms.tsv \
+  %D%/gerg_components.tsv \
+  %D%/gerg_departure.tsv \
+  %D%/gerg_ideal.tsv \
+  %D%/gerg_pairs.tsv \
+  %D%/gerg_pure.tsv
+
 tablesdir = $(pkgdatadir)/tables
-dist_tables_DATA = $(tables)
+dist_tables_DATA = $(tables) $(equation_tables)
 
 demodir = $(pkgdatadir)/tables/demo
 dist_demo_DATA = %D%/demo/morning.gw

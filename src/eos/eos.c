@@ -15,6 +15,7 @@ struct eos_mixture {
   const struct equation *equation;
   const char *name;                        /* what a fault calls it */
   const void *prepared;
+  double left_out;
 };
 
 /* Choice.  */
@@ -26,8 +27,8 @@ static const struct {
   [GAS_MODEL_AUTO] = { "auto", NULL },
   [GAS_MODEL_IDEAL] = { "ideal", &equation_ideal },
   [GAS_MODEL_PENG_ROBINSON] = { "Peng-Robinson", &equation_peng_robinson },
-  [GAS_MODEL_GERG_2008] = { "GERG-2008", NULL },
-  [GAS_MODEL_AGA8_DETAIL] = { "AGA8-DETAIL", NULL },
+  [GAS_MODEL_GERG_2008] = { "GERG-2008", &equation_gerg_2008 },
+  [GAS_MODEL_AGA8_DETAIL] = { "AGA8-DETAIL", &equation_aga8_detail },
 };
 
 const char *
@@ -74,16 +75,24 @@ equation_choose (enum gas_model model, const struct composition *composition,
   if (model == GAS_MODEL_AUTO) {
     return best_equation (composition, lacking);
   }
-  if (equation == NULL) {
-    fault_set (fault, MESSAGE_MODEL_ABSENT, gas_model_name (model), NULL);
-    return NULL;
-  }
   if (!equation->covers (composition, &missing)) {
     fault_set (fault, MESSAGE_MODEL_LACKS, gas_model_name (model), missing);
     return NULL;
   }
   *lacking = NULL;
   return equation;
+}
+
+const struct equation *
+equation_choose_at (enum gas_model model, const struct composition *composition, double T,
+                    double p, const char **lacking, struct fault *fault)
+{
+  if (model == GAS_MODEL_AUTO && equation_gerg_2008.covers (composition, lacking)
+      && equation_gerg_2008.range (NULL, T, p) != EOS_RANGE_OUTSIDE) {
+    *lacking = NULL;
+    return &equation_gerg_2008;
+  }
+  return equation_choose (model, composition, lacking, fault);
 }
 
 /* The common iteration: density roots of an equation that has no closed form.
@@ -263,6 +272,9 @@ eos_solve_prepared (const struct eos_mixture *mixture, double T, double p,
   } else if (!roots_by_iteration (equation, isotherm, T, p, &roots)) {
     return fault_set (fault, MESSAGE_NOT_CONVERGED, "the density", NULL);
   }
+  if (isnan (roots.gas)) {
+    return fault_set (fault, MESSAGE_NOT_CONVERGED, "the density", NULL);
+  }
   if (!(roots.gas > 0) && roots.dense > 0) {
     return fault_set (fault, MESSAGE_STATE_LIQUID, mixture->name, NULL);
   }
@@ -273,9 +285,24 @@ eos_solve_prepared (const struct eos_mixture *mixture, double T, double p,
   state->equation = equation;
   state->Z = Z;
   state->density = roots.gas;
+  state->left_out = mixture->left_out;
+  state->range = equation->range != NULL ? equation->range (mixture->prepared, T, p)
+                                         : EOS_RANGE_UNSTATED;
+  state->uncertainty = equation->uncertainty != NULL
+                       ? equation->uncertainty (mixture->prepared, T, p) : (double) NAN;
   state->may_condense = roots.dense > 0
                         && gibbs_energy (equation, isotherm, roots.dense)
                            < gibbs_energy (equation, isotherm, roots.gas);
+  return true;
+}
+
+bool
+eos_caloric (const struct eos_mixture *mixture, double T, double rho, struct caloric *caloric)
+{
+  if (mixture->equation->caloric == NULL) {
+    return false;
+  }
+  mixture->equation->caloric (mixture->prepared, T, rho, caloric);
   return true;
 }
 
@@ -288,6 +315,7 @@ mixture_in (void *memory, const struct equation *equation,
     .equation = equation,
     .name = composition->count == 1 ? composition->species[0]->key : "the mixture",
     .prepared = memory,
+    .left_out = equation->left_out != NULL ? equation->left_out (composition) : 0,
   };
 }
 
@@ -307,7 +335,7 @@ bool
 eos_solve (const struct equation *equation, const struct composition *composition, double T,
            double p, struct eos_state *state, struct fault *fault)
 {
-  _Alignas (max_align_t) unsigned char memory[4096];
+  _Alignas (max_align_t) unsigned char memory[8192];
   const size_t size = equation->mixture_size (composition->count);
   struct arena *arena = size > sizeof memory ? arena_create () : NULL;
   void *where = arena != NULL ? arena_alloc (arena, 1, size) : memory;

@@ -13,7 +13,7 @@
 #include <stddef.h>
 #include "support/check.h"
 
-struct arena; struct composition; struct fault;
+struct arena; struct caloric; struct composition; struct fault;
 
 /* Residual Helmholtz energy a^r/(RT) at T and rho, and rho times its derivatives by rho:
    a1 = rho d(a)/d(rho), a2 = rho^2 d2(a)/d(rho)2.  So Z = 1 + a1 and
@@ -26,12 +26,34 @@ struct residual { double a, a1, a2; };
    loop its one root is the gas root, however dense.                                             */
 struct density_roots { double gas, dense; };
 
+/* Where a state lies in what the authors of an equation state of it.  */
+enum eos_range {
+  EOS_RANGE_UNSTATED,                      /* they state no limits */
+  EOS_RANGE_FULL,                          /* the range of full accuracy */
+  EOS_RANGE_EXTENDED,                      /* further out, less accurate */
+  EOS_RANGE_OUTSIDE
+};
+
+/* Traces an equation of reference lacks are left out, and the rest of the gas taken for the whole,
+   as long as they are together below this mole fraction.                                        */
+#define EOS_TRACES 0.005
+
 struct equation {
   const char *name;                        /* "Peng-Robinson" */
   const char *source;
   double gas_constant;                     /* J/(mol K), the one the equation was made with */
-  /* Does it cover every species?  *LACKING is the key of the first it lacks, or null.  */
+  /* Does it cover every species, but for traces it may leave out?  *LACKING is the key of the
+     first it lacks, or null.                                                                    */
   bool (*covers) (const struct composition *, const char **lacking);
+  /* The mole fraction of what is left out; null: nothing ever is.  */
+  double (*left_out) (const struct composition *);
+  /* Where a state of MIXTURE lies; null: unstated.  */
+  enum eos_range (*range) (const void *mixture, double T, double p);
+  /* The relative expanded uncertainty (k = 2) of the density at a state, as published; NAN where
+     nothing is.  Null: none is.                                                                 */
+  double (*uncertainty) (const void *mixture, double T, double p);
+  /* Caloric properties at T and rho; null: the equation has no ideal-gas part.  */
+  void (*caloric) (const void *mixture, double T, double rho, struct caloric *);
   /* Fills MIXTURE, mixture_size (count) bytes aligned for any type.  What it needs of the
      composition is copied.                                                                     */
   size_t (*mixture_size) (size_t count);
@@ -51,26 +73,36 @@ struct equation {
 
 enum { EOS_ISOTHERM_SIZE = 16384 };
 
-extern const struct equation equation_ideal, equation_peng_robinson;
+extern const struct equation equation_ideal, equation_peng_robinson, equation_gerg_2008,
+                             equation_aga8_detail;
 
 enum gas_model { GAS_MODEL_AUTO, GAS_MODEL_IDEAL, GAS_MODEL_PENG_ROBINSON, GAS_MODEL_GERG_2008,
                  GAS_MODEL_AGA8_DETAIL, GAS_MODEL_COUNT };
 const char *gas_model_name (enum gas_model);             /* "auto", "ideal", "Peng-Robinson", ... */
-/* The equation of a model; null for auto and for models this version does not compute.  */
+/* The equation of a model; null for auto.  */
 const struct equation *gas_model_equation (enum gas_model);
 
 /* The choice for a composition: for auto the best equation that covers it, else the ideal gas
    with *LACKING the key of the first species the better one lacks a constant of (null where
-   nothing is lacking).  For a named model its equation; null with the kinds model-lacks (facts:
-   model, species), model-absent (fact: model).                                                 */
+   nothing is lacking).  For a named model its equation; null with the kind model-lacks (facts:
+   model, species).                                                                              */
 const struct equation *equation_choose (enum gas_model, const struct composition *,
                                         const char **lacking, struct fault *) MUST_CHECK;
+
+/* The same at a state.  For auto it is the first of these that covers the gas and has the state in
+   its full or extended range: GERG-2008, Peng-Robinson, the ideal gas.                          */
+const struct equation *equation_choose_at (enum gas_model, const struct composition *, double T,
+                                           double p, const char **lacking,
+                                           struct fault *) MUST_CHECK;
 
 struct eos_state {
   const struct equation *equation;
   double Z;                                /* of the gas root: p/(rho R T), R of the equation */
   double density;                          /* mol/m3 */
   bool may_condense;                       /* a denser root is the more stable one */
+  enum eos_range range;
+  double left_out;                         /* mole fraction of traces the equation lacks */
+  double uncertainty;                      /* of the density, relative, k = 2; NAN: none published */
 };
 
 /* Z and density of the gas at T and p.  Kinds: range (T or p not positive or not finite),
@@ -90,5 +122,8 @@ const struct eos_mixture *eos_prepare (struct arena *, const struct equation *,
                                        const struct composition *) MUST_CHECK;
 bool eos_solve_prepared (const struct eos_mixture *, double T, double p, struct eos_state *,
                          struct fault *) MUST_CHECK;
+/* Caloric properties (eos/caloric.h) of a mixture at T and a density in mol/m3, as eos_solve gives
+   it.  False where the equation has none.                                                       */
+bool eos_caloric (const struct eos_mixture *, double T, double rho, struct caloric *) MUST_CHECK;
 
 #endif

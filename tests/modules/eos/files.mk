@@ -18,6 +18,20 @@ suites += %D%/t_eos
   %D%/t_eos.c
 %C%_t_eos_LDADD = $(with_eos)
 
+suites += %D%/t_reference
+%C%_t_reference_SOURCES = \
+  %D%/fluids.c \
+  %D%/fluids.h \
+  %D%/t_reference.c
+%C%_t_reference_LDADD = $(with_eos)
+
+suites += %D%/t_reference_random
+%C%_t_reference_random_SOURCES = \
+  %D%/fluids.c \
+  %D%/fluids.h \
+  %D%/t_reference_random.c
+%C%_t_reference_random_LDADD = $(with_eos)
+
 suites += %D%/t_table_states
 %C%_t_table_states_SOURCES = \
   %D%/fluids.c \
@@ -27,4 +41,6 @@ suites += %D%/t_table_states
 
 EXTRA_DIST += \
   tests/numbers/peng_robinson.tsv \
-  tests/numbers/real_gas.tsv
+  tests/numbers/real_gas.tsv \
+  tests/numbers/reference_published.tsv \
+  tests/numbers/reference_states.tsv

@@ -1,0 +1,95 @@
+/* Equations whose residual Helmholtz energy is a sum of terms
+
+     a^r/(RT) = sum c tau^t delta^d exp(-phi(delta)),   tau = T_r/T,  delta = rho/rho_r,
+
+   with phi none, delta^c or eta (delta - epsilon)^2 + beta (delta - gamma).
+
+   Terms of a mixture that differ by nothing but c share a slot and are added up once for a
+   composition.  At a fixed T the slots of one phi and one d fold into one coefficient, so that at
+   a density there is one short polynomial and one exponential for each phi.  Only what the
+   components at hand need is kept.                                                              */
+#ifndef EOS_HELMHOLTZ_H
+#define EOS_HELMHOLTZ_H
+
+#include <stdbool.h>
+#include <stddef.h>
+#include "eos/eos.h"
+
+enum {
+  HELMHOLTZ_PARTS = 40,                    /* t is a multiple of 1/40 */
+  HELMHOLTZ_WHOLE_LEAST = -13, HELMHOLTZ_WHOLE_MOST = 30,
+  HELMHOLTZ_POWERS = 10,                   /* d and c are below this */
+  HELMHOLTZ_GROUPS = 15,                   /* different phi of one equation */
+  HELMHOLTZ_SLOTS = 160
+};
+
+struct helmholtz_exponent { int power; double eta, epsilon, beta, gamma; };
+
+/* t = whole + part/HELMHOLTZ_PARTS.  Slots are sorted by exponent, then by d.  */
+struct helmholtz_slot { unsigned char exponent, d; signed char whole; unsigned char part; };
+
+struct helmholtz_form {
+  const struct helmholtz_exponent *exponents;
+  const struct helmholtz_slot *slots;
+  size_t slot_count;
+  double loop_tau;                         /* below this tau no isotherm has a loop */
+};
+
+struct helmholtz_term { double c; struct helmholtz_slot at; };
+
+/* What depends on the composition: terms with c not 0, in the order of the slots.  */
+struct helmholtz_mixture {
+  const struct helmholtz_form *form;
+  double gas_constant;                     /* J/(mol K) */
+  double T_r, rho_r;                       /* K, mol/m3 */
+  size_t count;
+  struct helmholtz_term terms[HELMHOLTZ_SLOTS];
+};
+
+/* The terms of one phi at a T: polynomial c[lowest..highest] of delta.  */
+struct helmholtz_group {
+  struct helmholtz_exponent phi;
+  int lowest, highest;
+  double c[HELMHOLTZ_POWERS];
+};
+
+struct helmholtz_isotherm {
+  double RT, rho_r, tau;
+  bool may_loop;
+  int count;
+  struct helmholtz_group groups[HELMHOLTZ_GROUPS];
+};
+
+/* a^r/(RT) and its derivatives by ln(delta): a1 is delta d/d(delta), a2 the same of a1, and so on.
+   Z = 1 + a1,  dp/d(ln rho) = rho RT (Z + a2).                                                  */
+struct helmholtz_value { double a, a1, a2, a3; };
+
+/* Keeps of COEFFICIENT, one for each slot of the form, what is not 0.  */
+void helmholtz_compact (const double coefficient[], struct helmholtz_mixture *);
+
+/* tau^t for all slots: tau^whole, whole from HELMHOLTZ_WHOLE_LEAST, and tau^(part/40).  */
+struct tau_powers {
+  double whole[HELMHOLTZ_WHOLE_MOST - HELMHOLTZ_WHOLE_LEAST + 1];
+  double part[HELMHOLTZ_PARTS];
+};
+void tau_powers_set (struct tau_powers *, double tau);
+static inline double
+tau_powers_of (const struct tau_powers *powers, struct helmholtz_slot at)
+{
+  return powers->whole[at.whole - HELMHOLTZ_WHOLE_LEAST] * powers->part[at.part];
+}
+
+void helmholtz_set_isotherm (const struct helmholtz_mixture *, double T,
+                             struct helmholtz_isotherm *);
+struct helmholtz_value helmholtz_at (const struct helmholtz_isotherm *, double delta);
+
+/* a^r/(RT) and its derivatives by ln(delta) (d) and ln(tau) (t), for caloric properties.  */
+struct helmholtz_full { double a, d, dd, t, tt, dt; };
+struct helmholtz_full helmholtz_full_at (const struct helmholtz_mixture *, double T, double rho);
+
+/* For struct equation; ISOTHERM is a struct helmholtz_isotherm.  */
+struct residual helmholtz_residual (const void *isotherm, double rho);
+double helmholtz_densest (const void *isotherm);
+struct density_roots helmholtz_roots (const void *isotherm, double p);
+
+#endif
