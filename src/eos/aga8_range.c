@@ -1,5 +1,6 @@
-/* Where AGA8 DETAIL holds, and how well.  All figures of this file are from memory: AGA Report No. 8
-   (1994) figure 1 and table 1, AGA Report No. 8 Part 1 (2017); ISO 20765-1:2005, scope; ISO 12213-2.  */
+/* Where AGA8 DETAIL holds, and how well.  All figures of this file are from memory: AGA Report
+   No. 8 (1994) figure 1 and table 1, AGA Report No. 8 Part 1 (2017); ISO 20765-1:2005, scope;
+   ISO 12213-2.                                                                                  */
 #include "config.h"
 #include "eos/aga8.h"
 
@@ -58,8 +59,8 @@ aga8_range (const void *mixture, double T, double p)
                                                                          : range;
 }
 
-/* The four regions of AGA8 (1994), figure 1, for natural gases: -8 to 62 degC and 12 MPa, -60 to 120
-   degC and 17 MPa, -130 to 200 degC and 70 MPa, -130 to 400 degC and 140 MPa.                   */
+/* The four regions of AGA8 (1994), figure 1, for natural gases: -8 to 62 degC and 12 MPa, -60 to
+   120 degC and 17 MPa, -130 to 200 degC and 70 MPa, -130 to 400 degC and 140 MPa.               */
 double
 aga8_uncertainty (const void *mixture, double T, double p)
 {

@@ -102,7 +102,7 @@ struct eos_state {
   bool may_condense;                       /* a denser root is the more stable one */
   enum eos_range range;
   double left_out;                         /* mole fraction of traces the equation lacks */
-  double uncertainty;                      /* of the density, relative, k = 2; NAN: none published */
+  double uncertainty;                      /* of the density, relative, k = 2; NAN: unpublished */
 };
 
 /* Z and density of the gas at T and p.  Kinds: range (T or p not positive or not finite),

@@ -128,7 +128,8 @@ gerg_set_isotherm (const void *mixture, double T, void *isotherm)
   helmholtz_set_isotherm (&((const struct gerg_mixture *) mixture)->residual, T, isotherm);
 }
 
-/* Kunz and Wagner, abstract: normal range 90 to 450 K, to 35 MPa; extended 60 to 700 K, to 70 MPa.  */
+/* Kunz and Wagner, abstract: normal range from 90 to 450 K and to 35 MPa, extended range from 60 to
+   700 K and to 70 MPa.                                                                          */
 static enum eos_range
 gerg_range (const void *mixture, double T, double p)
 {
@@ -143,7 +144,7 @@ gerg_range (const void *mixture, double T, double p)
 static const double methane_least = 0.45;
 
 /* Kunz and Wagner, section on uncertainties (from memory): density of natural gases to 0.1 % from
-   250 to 450 K and to 35 MPa; elsewhere in the gas to 0.2 to 0.5 %, of which the larger is taken. */
+   250 to 450 K and to 35 MPa; elsewhere in the gas to 0.2 to 0.5 %; the larger is taken.        */
 static double
 gerg_uncertainty (const void *mixture, double T, double p)
 {

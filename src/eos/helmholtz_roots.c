@@ -17,9 +17,11 @@ enum { STEPS_FREE = 12, STEPS_BOUND = 100, STEPS_SPINODAL = 60,
 static const double step_last = 2e-6;
 static const double step_bound = 1e-14;
 
-/* The walk: first stride over B rho_r, largest stride and end in delta; the walk ends behind a dense root beyond `liquid`.  Liquids
-   at their triple points are at 3 to 3.7.                                                       */
-static const double stride_first = 0.1, growth = 1.3, stride = 0.05, densest = 5, liquid = 1.5;
+/* The walk: the first stride over B rho_r, how strides grow, the largest in delta.  It ends at
+   `densest`, or behind a dense root beyond `liquid`.  Liquids at their triple points are at 3 to
+   3.7.                                                                                          */
+static const double stride_first = 0.1, growth = 1.3, stride = 0.05;
+static const double densest = 5, liquid = 1.5;
 
 double
 helmholtz_densest (const void *isotherm)

@@ -121,11 +121,167 @@ random_states (void)
   arena_destroy (arena);
 }
 
+/* A gas at T and p, and what GERG-2008 says of it.  */
+struct point { double T, p, rho, s, h, u, w, molar_mass; };
+
+static struct point
+point_at (const struct eos_mixture *gas, struct arena *arena, double T, double p)
+{
+  struct eos_state state = { .Z = 0 };
+  struct caloric c = { .Z = 0 };
+  struct fault fault;
+
+  fault_init (&fault, arena);
+  CHECK (eos_solve_prepared (gas, T, p, &state, &fault));
+  CHECK (eos_caloric (gas, T, state.density, &c));
+  NEAR (c.pressure, p, 1e-12);
+  NEAR (c.gibbs, c.enthalpy - T * c.entropy, 1e-14);
+  NEAR (c.enthalpy, c.energy + p / state.density, 1e-12);
+  return (struct point) { T, p, state.density, c.entropy, c.enthalpy, c.energy, c.speed_of_sound,
+                          c.molar_mass };
+}
+
+/* Differences over twice a step of 1e-4 of T or p: off by its square, and by rounding over it.  */
+static const double step = 1e-4, off = 2e-6;
+
+/* Derivatives by T at p and by p at T:  (dh/dT)_p = cp,  (ds/dT)_p = cp/T,
+   (ds/dp)_T = -(dv/dT)_p (Maxwell),  (dh/dp)_T = v - T (dv/dT)_p,  mu = -(dh/dp)_T/cp.          */
+static void
+check_at_pressure (const struct eos_mixture *gas, struct arena *arena, struct point at,
+                   const struct caloric *c)
+{
+  const struct point hot = point_at (gas, arena, at.T * (1 + step), at.p);
+  const struct point cold = point_at (gas, arena, at.T * (1 - step), at.p);
+  const struct point high = point_at (gas, arena, at.T, at.p * (1 + step));
+  const struct point low = point_at (gas, arena, at.T, at.p * (1 - step));
+  const double dT = 2 * step * at.T, dp = 2 * step * at.p;
+  const double v = 1 / at.rho;
+  const double dv_dT = (1 / hot.rho - 1 / cold.rho) / dT;
+
+  NEAR ((hot.h - cold.h) / dT, c->cp, off);
+  NEAR ((hot.s - cold.s) / dT * at.T, c->cp, off);
+  NEAR ((high.s - low.s) / dp, -dv_dT, off);
+  NEAR ((high.h - low.h) / dp / v, 1 - at.T * dv_dT / v, 10 * off);
+  NEAR (c->joule_thomson * c->cp / v, -(high.h - low.h) / dp / v, 10 * off);
+}
+
+/* Derivatives at constant density and entropy:  (du/dT)_v = cv,  w^2 = (dp/d rho)_s/M from
+   (dp/d rho)_s = (dp/d rho)_T + T/(rho^2 cv) (dp/dT)_v^2,  kappa = w^2 M rho/p.                 */
+static void
+check_at_density (const struct eos_mixture *gas, struct point at, const struct caloric *c)
+{
+  struct caloric hot, cold, dense, thin;
+  const double dT = 2 * step * at.T, drho = 2 * step * at.rho;
+  double dp_dT, dp_drho;
+
+  CHECK (eos_caloric (gas, at.T * (1 + step), at.rho, &hot));
+  CHECK (eos_caloric (gas, at.T * (1 - step), at.rho, &cold));
+  CHECK (eos_caloric (gas, at.T, at.rho * (1 + step), &dense));
+  CHECK (eos_caloric (gas, at.T, at.rho * (1 - step), &thin));
+  dp_dT = (hot.pressure - cold.pressure) / dT;
+  dp_drho = (dense.pressure - thin.pressure) / drho;
+  NEAR ((hot.energy - cold.energy) / dT, c->cv, off);
+  NEAR (at.w * at.w * at.molar_mass,
+        dp_drho + at.T * dp_dT * dp_dT / (at.rho * at.rho * c->cv), off);
+  NEAR (c->isentropic_exponent, at.w * at.w * at.molar_mass * at.rho / at.p, 1e-12);
+  NEAR (-(dense.entropy - thin.entropy) / drho * at.rho * at.rho, dp_dT, off);    /* Maxwell */
+}
+
+static void
+caloric_by_differences (void)
+{
+  static const char *const gases[] = {
+    "CH4=0.906724;N2=0.031284;CO2=0.004676;C2H6=0.045279;C3H8=0.00828;nC4H10=0.0026;nC6H14=0.0012",
+    "N2=0.25;CO2=0.15;H2=0.1;O2=0.1;CO=0.1;H2S=0.1;He=0.1;Ar=0.1", "H2=1", "CO2=1",
+    "H2O=0.05;N2=0.7;CO2=0.1;O2=0.15", "CH4=0.7;iC4H10=0.1;nC4H10=0.1;nC10H22=0.01;H2=0.09",
+  };
+  struct arena *arena = arena_create ();
+
+  for (size_t i = 0; i < sizeof gases / sizeof gases[0]; i++) {
+    const struct eos_mixture *gas = eos_prepare (arena, GERG, fluid_mixture (arena, gases[i]));
+
+    for (double T = 400; T < 650; T += 60) {
+      for (double p = 1e4; p < 3e7; p *= 7) {
+        struct point at;
+        struct caloric c;
+
+        test_about ("%s, %g K, %g Pa", gases[i], T, p);
+        at = point_at (gas, arena, T, p);
+        CHECK (eos_caloric (gas, T, at.rho, &c));
+        check_at_pressure (gas, arena, at, &c);
+        check_at_density (gas, at, &c);
+      }
+    }
+  }
+  arena_destroy (arena);
+}
+
+/* A mixture of which all but a trace is one component is that component; Z goes to 1.  */
+static void
+limits (void)
+{
+  struct arena *arena = arena_create ();
+  struct fault fault;
+
+  fault_init (&fault, arena);
+  for (size_t i = 0; i < fluid_count (); i++) {
+    const bool is_methane = fluid_at (i) == fluid_find ("CH4");
+    const struct part parts[] = { { fluid_at (i), 1 },
+                                  { fluid_find (is_methane ? "N2" : "CH4"), 1e-11 } };
+    const struct composition *pure = composition_pure (arena, fluid_at (i));
+    struct eos_state one = { .Z = 0 }, other = { .Z = 0 };
+    const char *lacking;
+
+    test_about ("%s", fluid_at (i)->key);
+    if (GERG->covers (pure, &lacking)) {
+      CHECK (eos_solve (GERG, pure, 500, 1e5, &one, &fault));
+      CHECK (eos_solve (GERG, composition_make (arena, 2, parts, &fault), 500, 1e5, &other, &fault));
+      NEAR (other.Z, one.Z, 1e-10);
+      CHECK (eos_solve (GERG, pure, 500, 1e-3, &one, &fault));
+      NEAR (one.Z, 1, 1e-9);
+    }
+  }
+  arena_destroy (arena);
+}
+
+/* The order of components moves not the last digit.  */
+static void
+order (void)
+{
+  struct arena *arena = arena_create ();
+  uint64_t seed = SEED;
+
+  for (int i = 0; i < 200; i++) {
+    const struct composition *gas = random_gas (arena, &seed);
+    const double T = 300 + 300 * fluid_chance (&seed), p = 1e7 * fluid_chance (&seed);
+    const struct species *species[21];
+    double x[21];
+    struct composition turned = *gas;
+    struct eos_state one = { .Z = 0 }, other = { .Z = 0 };
+    struct fault fault;
+
+    for (size_t k = 0; k < gas->count; k++) {
+      species[k] = gas->species[gas->count - 1 - k];
+      x[k] = gas->fraction[gas->count - 1 - k];
+    }
+    turned.species = species;
+    turned.fraction = x;
+    fault_init (&fault, arena);
+    SAME_INT (eos_solve (GERG, gas, T, p, &one, &fault),
+              eos_solve (GERG, &turned, T, p, &other, &fault));
+    NEAR (other.Z, one.Z, 1e-15);
+  }
+  arena_destroy (arena);
+}
+
 int
 main (int argc, char *argv[])
 {
   static const struct test_case cases[] = {
     { "random states", random_states },
+    { "caloric properties by differences", caloric_by_differences },
+    { "limits", limits },
+    { "order of components", order },
     { NULL, NULL }
   };
 
