@@ -9,17 +9,8 @@
 
 static const char liquid_source[] = "IAPWS SR1-86(1992), eq. 1 (Wagner and Pruss 1993)";
 static const char ice_source[] = "IAPWS R14-08(2011), eq. 6";
-static const char partial_source[] = "Dalton and Raoult, ideal, no enhancement factor";
-
-static void
-record_pressure (struct workings *workings, double psat, enum water_phase phase)
-{
-  bool ice = phase == WATER_ICE;
-  workings_add (workings, ice ? "vapour pressure of ice" : "vapour pressure of liquid water",
-                ice ? "psat = pt exp(sum a_i theta^b_i/theta), theta = T/Tt"
-                : "psat = pc exp(Tc/T sum a_i tau^b_i), tau = 1 - T/Tc",
-                psat, "Pa", ice ? ice_source : liquid_source);
-}
+static const char ideal_source[] = "Dalton and Raoult, ideal, no enhancement factor";
+static const char factor_source[] = "L. Greenspan, J. Res. NBS 80A (1976) 41";
 
 static bool
 check_pressure (double p, struct fault *fault)
@@ -27,75 +18,6 @@ check_pressure (double p, struct fault *fault)
   if (isfinite (p) && p > 0)
     return true;
   return fault_set (fault, MESSAGE_RANGE, "an absolute pressure is above zero", NULL);
-}
-
-/* The share of water whose partial pressure is P_WATER in a gas at P.  */
-static bool
-share_of_water (double p_water, double p, double *y, struct fault *fault)
-{
-  double share = p_water / p;
-  if (share < 1) {
-    *y = share;
-    return true;
-  }
-  char what[160];
-  snprintf (what, sizeof what, "the water alone would have %.6g kPa, the gas has only %.6g kPa",
-            p_water / 1e3, p / 1e3);
-  return fault_set (fault, MESSAGE_RANGE, what, "state a higher pressure or less water");
-}
-
-bool
-moist_by_humidity (double phi, double T, double p, double *y, double *psat,
-                   struct workings *workings, struct fault *fault)
-{
-  double pressure = 0, share = 0;
-  if (!(phi >= 0 && phi <= 1)) {
-    char what[100];
-    snprintf (what, sizeof what, "a relative humidity is 0 to 100 %%, not %.6g %%", 100 * phi);
-    return fault_set (fault, MESSAGE_RANGE, what, NULL);
-  }
-  if (!check_pressure (p, fault) || !water_pressure_liquid (T, &pressure, fault)
-      || !share_of_water (phi * pressure, p, &share, fault))
-    return false;
-  record_pressure (workings, pressure, WATER_LIQUID);
-  workings_add (workings, "water", "y = phi psat/p", share, "mol/mol", partial_source);
-  *y = share;
-  *psat = pressure;
-  return true;
-}
-
-/* Saturation at T_SAT in gas at P.  */
-static bool
-share_at (double T_sat, double p, double *y, double *psat, bool *over_ice,
-          struct workings *workings, struct fault *fault)
-{
-  double pressure = 0, share = 0;
-  enum water_phase phase;
-  if (!check_pressure (p, fault) || !water_pressure (T_sat, &pressure, &phase, fault)
-      || !share_of_water (pressure, p, &share, fault))
-    return false;
-  record_pressure (workings, pressure, phase);
-  workings_add (workings, "water", "y = psat/p", share, "mol/mol", partial_source);
-  *y = share;
-  *psat = pressure;
-  *over_ice = phase == WATER_ICE;
-  return true;
-}
-
-bool
-moist_saturated (double T, double p, double *y, double *psat, bool *over_ice,
-                 struct workings *workings, struct fault *fault)
-{
-  return share_at (T, p, y, psat, over_ice, workings, fault);
-}
-
-/* Cooled at its own pressure the gas saturates at the dew point: its partial pressure of water is
-   the saturation pressure there.                                                                */
-bool
-moist_by_dew_point (double T_dew, double p, double *y, double *psat, bool *over_ice,
-                    struct workings *workings, struct fault *fault)
-{
-  return share_at (T_dew, p, y, psat, over_ice, workings, fault);
 }
 
 static bool
@@ -106,24 +28,228 @@ check_share (double y, struct fault *fault)
   return fault_set (fault, MESSAGE_RANGE, "a share of water is 0 to 1", NULL);
 }
 
+static bool
+check_humidity (double phi, struct fault *fault)
+{
+  char what[100];
+  if (phi >= 0 && phi <= 1)
+    return true;
+  snprintf (what, sizeof what, "a relative humidity is 0 to 100 %%, not %.6g %%", 100 * phi);
+  return fault_set (fault, MESSAGE_RANGE, what, NULL);
+}
+
+static void
+find_factor (const struct moist_question *q, double T, struct moist_answer *a)
+{
+  a->factor = 1;
+  a->applied = ENHANCEMENT_NOT_AIR;
+  if (q->air)
+    a->applied = enhancement_factor (T, q->p, a->psat, a->phase, &a->factor);
+}
+
+/* Saturation pressure and factor at T: over liquid, or over what is there at T.  */
+static bool
+saturate (const struct moist_question *q, double T, bool liquid, struct moist_answer *a,
+          struct fault *fault)
+{
+  a->phase = WATER_LIQUID;
+  if (liquid ? !water_pressure_liquid (T, &a->psat, fault)
+      : !water_pressure (T, &a->psat, &a->phase, fault))
+    return false;
+  find_factor (q, T, a);
+  return true;
+}
+
+static void
+record_factor (struct workings *workings, const struct moist_answer *a)
+{
+  if (a->applied == ENHANCEMENT_APPLIED)
+    workings_add (workings, "enhancement factor",
+                  "ln f = alpha (1 - psat/p) + beta (p/psat - 1)", a->factor, "1", factor_source);
+}
+
+static void
+record_saturation (struct workings *workings, const struct moist_answer *a)
+{
+  bool ice = a->phase == WATER_ICE;
+  workings_add (workings, ice ? "vapour pressure of ice" : "vapour pressure of liquid water",
+                ice ? "psat = pt exp(sum a_i theta^b_i/theta), theta = T/Tt"
+                : "psat = pc exp(Tc/T sum a_i tau^b_i), tau = 1 - T/Tc",
+                a->psat, "Pa", ice ? ice_source : liquid_source);
+  record_factor (workings, a);
+}
+
+/* The mole fraction at PHI of saturation, which is in A.  */
+static bool
+share_at (const struct moist_question *q, double phi, struct moist_answer *a,
+          struct workings *workings, struct fault *fault)
+{
+  double p_water = phi * a->factor * a->psat;
+  bool enhanced = a->applied == ENHANCEMENT_APPLIED, humid = q->asked == MOIST_BY_HUMIDITY;
+  char what[160];
+  if (!(p_water / q->p < 1)) {
+    snprintf (what, sizeof what, "the water alone would have %.6g kPa, the gas has only %.6g kPa",
+              p_water / 1e3, q->p / 1e3);
+    return fault_set (fault, MESSAGE_RANGE, what, "state a higher pressure or less water");
+  }
+  a->value = p_water / q->p;
+  record_saturation (workings, a);
+  workings_add (workings, "water", enhanced ? humid ? "y = phi f psat/p" : "y = f psat/p"
+                : humid ? "y = phi psat/p" : "y = psat/p",
+                a->value, "mol/mol", enhanced ? factor_source : ideal_source);
+  return true;
+}
+
+/* Saturation by a temperature.  Cooled at its own pressure the gas saturates at the dew point: its
+   water is what saturation holds there.                                                         */
+static bool
+answer_share (const struct moist_question *q, struct moist_answer *a, struct workings *workings,
+              struct fault *fault)
+{
+  bool humid = q->asked == MOIST_BY_HUMIDITY;
+  double T = q->asked == MOIST_BY_DEW_POINT ? q->given : q->T;
+  if ((humid && !check_humidity (q->given, fault)) || !check_pressure (q->p, fault)
+      || !saturate (q, T, humid, a, fault))
+    return false;
+  return share_at (q, humid ? q->given : 1, a, workings, fault);
+}
+
+static bool
+answer_humidity (const struct moist_question *q, struct moist_answer *a,
+                 struct workings *workings, struct fault *fault)
+{
+  if (!check_share (q->given, fault) || !check_pressure (q->p, fault)
+      || !saturate (q, q->T, true, a, fault))
+    return false;
+  a->value = q->given * q->p / (a->factor * a->psat);
+  record_saturation (workings, a);
+  workings_add (workings, "relative humidity",
+                a->applied == ENHANCEMENT_APPLIED ? "phi = y p/(f psat)" : "phi = y p/psat",
+                a->value, "1",
+                "World Meteorological Organization, WMO-No. 8, annex 4.A: over liquid water");
+  return true;
+}
+
+/* The dew point in A, found without a factor, becomes that with it, f(T) psat(T) = p_water.  f
+   hardly moves with T (a hundredth of what psat does), so that psat = p_water/f, taken again and
+   again, gains two digits a step.  f > 1 lowers T: begun above, it stays on the liquid while it
+   can.  Where the end lies outside the factor's range A stays what it was, but for the reason.   */
+static bool
+refine_dew_point (const struct moist_question *q, double p_water, struct moist_answer *a,
+                  struct fault *fault)
+{
+  enum { STEPS = 40 };                   /* ten are enough */
+  static const double settled = 1e-13;   /* relative, of T */
+  struct moist_answer now = *a;
+  double step = HUGE_VAL;
+  for (int i = 0; i < STEPS && step > settled * now.value; i++) {
+    double T = now.value;
+    find_factor (q, fmin (T, ENHANCEMENT_T_HIGHEST), &now);
+    a->applied = now.applied;
+    if (now.applied != ENHANCEMENT_APPLIED)
+      return true;
+    now.psat = p_water / now.factor;
+    if (!water_dew_point (now.psat, &now.value, &now.phase, fault))
+      return false;
+    step = fabs (now.value - T);
+  }
+  struct moist_answer last = now;
+  find_factor (q, now.value, &last);     /* is the end within the range? */
+  if (last.applied == ENHANCEMENT_APPLIED)
+    *a = now;
+  else
+    a->applied = last.applied;
+  return true;
+}
+
+static bool
+answer_dew_point (const struct moist_question *q, struct moist_answer *a,
+                  struct workings *workings, struct fault *fault)
+{
+  if (!check_share (q->given, fault) || !check_pressure (q->p, fault))
+    return false;
+  if (q->given <= 0)
+    return fault_set (fault, MESSAGE_NO_WATER, NULL, NULL);
+  double p_water = q->given * q->p;
+  *a = (struct moist_answer) { .psat = p_water, .factor = 1, .applied = ENHANCEMENT_NOT_AIR };
+  if (!water_dew_point (p_water, &a->value, &a->phase, fault)
+      || (q->air && !refine_dew_point (q, p_water, a, fault)))
+    return false;
+  bool ice = a->phase == WATER_ICE, enhanced = a->applied == ENHANCEMENT_APPLIED;
+  workings_add (workings, "partial pressure of water", "p_w = y p", p_water, "Pa",
+                enhanced ? factor_source : ideal_source);
+  record_factor (workings, a);
+  workings_add (workings, ice ? "frost point" : "dew point",
+                enhanced ? "f psat(T_dew) = p_w" : "psat(T_dew) = p_w", a->value, "K",
+                ice ? ice_source : liquid_source);
+  return true;
+}
+
+bool
+moist_answer (const struct moist_question *q, struct moist_answer *answer,
+              struct workings *workings, struct fault *fault)
+{
+  struct moist_answer found = { 0 };
+  bool done = q->asked == MOIST_DEW_POINT ? answer_dew_point (q, &found, workings, fault)
+    : q->asked == MOIST_HUMIDITY ? answer_humidity (q, &found, workings, fault)
+    : answer_share (q, &found, workings, fault);
+  if (done)
+    *answer = found;
+  return done;
+}
+
+bool
+moist_by_humidity (double phi, double T, double p, double *y, double *psat,
+                   struct workings *workings, struct fault *fault)
+{
+  struct moist_question q = { .asked = MOIST_BY_HUMIDITY, .given = phi, .T = T, .p = p };
+  struct moist_answer a;
+  if (!moist_answer (&q, &a, workings, fault))
+    return false;
+  *y = a.value;
+  *psat = a.psat;
+  return true;
+}
+
+static bool
+share_saturated (const struct moist_question *q, double *y, double *psat, bool *over_ice,
+                 struct workings *workings, struct fault *fault)
+{
+  struct moist_answer a;
+  if (!moist_answer (q, &a, workings, fault))
+    return false;
+  *y = a.value;
+  *psat = a.psat;
+  *over_ice = a.phase == WATER_ICE;
+  return true;
+}
+
+bool
+moist_saturated (double T, double p, double *y, double *psat, bool *over_ice,
+                 struct workings *workings, struct fault *fault)
+{
+  struct moist_question q = { .asked = MOIST_SATURATED, .T = T, .p = p };
+  return share_saturated (&q, y, psat, over_ice, workings, fault);
+}
+
+bool
+moist_by_dew_point (double T_dew, double p, double *y, double *psat, bool *over_ice,
+                    struct workings *workings, struct fault *fault)
+{
+  struct moist_question q = { .asked = MOIST_BY_DEW_POINT, .given = T_dew, .p = p };
+  return share_saturated (&q, y, psat, over_ice, workings, fault);
+}
+
 bool
 moist_dew_point (double y, double p, double *T_dew, bool *over_ice, struct workings *workings,
                  struct fault *fault)
 {
-  double found;
-  enum water_phase phase;
-  if (!check_share (y, fault) || !check_pressure (p, fault))
+  struct moist_question q = { .asked = MOIST_DEW_POINT, .given = y, .p = p };
+  struct moist_answer a;
+  if (!moist_answer (&q, &a, workings, fault))
     return false;
-  if (y <= 0)
-    return fault_set (fault, MESSAGE_NO_WATER, NULL, NULL);
-  if (!water_dew_point (y * p, &found, &phase, fault))
-    return false;
-  bool ice = phase == WATER_ICE;
-  workings_add (workings, "partial pressure of water", "p_w = y p", y * p, "Pa", partial_source);
-  workings_add (workings, ice ? "frost point" : "dew point", "psat(T_dew) = p_w", found, "K",
-                ice ? ice_source : liquid_source);
-  *T_dew = found;
-  *over_ice = ice;
+  *T_dew = a.value;
+  *over_ice = a.phase == WATER_ICE;
   return true;
 }
 
@@ -131,13 +257,10 @@ bool
 moist_humidity (double y, double T, double p, double *phi, struct workings *workings,
                 struct fault *fault)
 {
-  double psat;
-  if (!check_share (y, fault) || !check_pressure (p, fault)
-      || !water_pressure_liquid (T, &psat, fault))
+  struct moist_question q = { .asked = MOIST_HUMIDITY, .given = y, .T = T, .p = p };
+  struct moist_answer a;
+  if (!moist_answer (&q, &a, workings, fault))
     return false;
-  record_pressure (workings, psat, WATER_LIQUID);
-  workings_add (workings, "relative humidity", "phi = y p/psat", y * p / psat, "1",
-                "World Meteorological Organization, WMO-No. 8, annex 4.A: over liquid water");
-  *phi = y * p / psat;
+  *phi = a.value;
   return true;
 }

@@ -1,5 +1,6 @@
 #include "config.h"
 #include <math.h>
+#include <stdlib.h>
 #include "libtest.h"
 #include "property/moist.h"
 #include "support/arena.h"
@@ -104,6 +105,122 @@ humidity_and_back (void)
 }
 
 static void
+each_saturation (char *cells[])
+{
+  start ();
+  struct moist_question q = { .asked = MOIST_SATURATED, .T = strtod (cells[0], NULL),
+                              .p = 101325, .air = true };
+  double enhanced = strtod (cells[2], NULL);
+  struct moist_answer a = { 0 };
+  NEED (moist_answer (&q, &a, &workings, &fault));
+  NEAR (a.value, enhanced, 1e-7);        /* eight digits, and those of psat behind them */
+  SAME_INT (a.applied, ENHANCEMENT_APPLIED);
+  SAME_INT (a.phase, q.T < 273.16 ? WATER_ICE : WATER_LIQUID);
+  SAME_INT (workings.count, 3);
+  q.air = false;
+  NEED (moist_answer (&q, &a, NULL, &fault));
+  NEAR (a.value, strtod (cells[1], NULL), 1e-7);
+  SAME_INT (a.applied, ENHANCEMENT_NOT_AIR);
+  /* The dew point of that gas is where it was saturated.  */
+  struct moist_question back = { .asked = MOIST_DEW_POINT, .given = enhanced, .p = 101325,
+                                 .air = true };
+  NEED (moist_answer (&back, &a, NULL, &fault));
+  NEAR (a.value, q.T, 2e-8);
+}
+
+static void
+saturated_air (void)
+{
+  CHECK (test_each_row ("numbers/saturation.tsv", 4, each_saturation) >= 25);
+}
+
+/* Saturation, its dew point, its humidity, under the pressures of the factor's range.  Just below
+   the triple point there is a dew point besides (see both_points): those are left out.          */
+static void
+enhanced_and_back (void)
+{
+  const double pressures[] = { 1e5, 101325, 7e5, 2e6 };
+  for (size_t k = 0; k < 4; k++)
+    for (double T = 223.15; T < 363.2; T += 1.25) {
+      if (T > 273.1 && T < 273.16)
+        continue;
+      start ();
+      test_about ("T = %g K, p = %g Pa", T, pressures[k]);
+      struct moist_question q = { .asked = MOIST_SATURATED, .T = T, .p = pressures[k],
+                                  .air = true };
+      struct moist_answer a = { 0 }, back = { 0 };
+      NEED (moist_answer (&q, &a, NULL, &fault));
+      SAME_INT (a.applied, ENHANCEMENT_APPLIED);
+      CHECK (a.factor > 1);
+      q.asked = MOIST_DEW_POINT;
+      q.given = a.value;
+      NEED (moist_answer (&q, &back, NULL, &fault));
+      NEAR (back.value, T, 1e-11);
+      NEAR (back.factor, a.factor, 1e-11);
+      SAME_INT (back.phase, a.phase);
+      if (a.phase == WATER_LIQUID) {
+        q.asked = MOIST_HUMIDITY;
+        NEED (moist_answer (&q, &back, NULL, &fault));
+        NEAR (back.value, 1, 1e-14);
+      }
+    }
+}
+
+/* At 2 MPa f jumps from 1.0748 over ice to 1.0724 over liquid (numbers/enhancement.tsv): a gas
+   with the mean has both a frost and a dew point, and it is the dew point that is given.        */
+static void
+both_points (void)
+{
+  start ();
+  struct moist_question q = { .asked = MOIST_DEW_POINT, .given = 1.0736 * 611.657 / 2e6, .p = 2e6,
+                              .air = true };
+  struct moist_answer a = { 0 };
+  NEED (moist_answer (&q, &a, NULL, &fault));
+  SAME_INT (a.phase, WATER_LIQUID);
+  CHECK (a.value >= 273.16 && a.value < 273.2);
+}
+
+/* Out of its range no factor is applied, and that is said.  */
+static void
+beyond (void)
+{
+  start ();
+  struct moist_question q = { .asked = MOIST_SATURATED, .T = 300, .p = 3e6, .air = true };
+  struct moist_answer a = { 0 };
+  NEED (moist_answer (&q, &a, &workings, &fault));
+  SAME_INT (a.applied, ENHANCEMENT_BEYOND_P);
+  NEAR (a.value, a.psat / 3e6, 1e-15);
+  NEAR (a.factor, 1, 0);
+  SAME_INT (workings.count, 2);
+  q = (struct moist_question) { .asked = MOIST_DEW_POINT, .given = 0.9, .p = 1e5, .air = true };
+  NEED (moist_answer (&q, &a, NULL, &fault));
+  SAME_INT (a.applied, ENHANCEMENT_BEYOND_T);
+  CHECK (a.value > 363.15);
+  q.given = 1e-6;
+  NEED (moist_answer (&q, &a, NULL, &fault));
+  SAME_INT (a.applied, ENHANCEMENT_BEYOND_T);
+  NEAR (a.psat, 0.1, 1e-12);
+}
+
+/* 60 % at 35 degC and 101.325 kPa: 0.6 * 1.004455 * 5629.0574/101325 (numbers/enhancement.tsv,
+   IAPWS SR1-86(1992)).                                                                          */
+static void
+enhanced_humidity (void)
+{
+  start ();
+  struct moist_question q = { .asked = MOIST_BY_HUMIDITY, .given = 0.6, .T = 308.15, .p = 101325,
+                              .air = true };
+  struct moist_answer a = { 0 };
+  NEED (moist_answer (&q, &a, &workings, &fault));
+  NEAR (a.value, 0.6 * 1.004455 * 5629.0574 / 101325, 6e-7);
+  SAME_TEXT (workings.last->formula, "y = phi f psat/p");
+  q.asked = MOIST_BY_DEW_POINT;
+  q.given = 285.15;
+  NEED (moist_answer (&q, &a, NULL, &fault));
+  CHECK (a.value > a.psat / 101325);
+}
+
+static void
 faults (void)
 {
   double y = -7, psat = -7;
@@ -153,6 +270,11 @@ static const struct test_case cases[] = {
   { "frost", frost },
   { "dew point and pressure", dew_point_and_pressure },
   { "humidity and back", humidity_and_back },
+  { "saturated air", saturated_air },
+  { "enhanced and back", enhanced_and_back },
+  { "frost and dew point at once", both_points },
+  { "beyond the factor's range", beyond },
+  { "enhanced humidity", enhanced_humidity },
   { "faults", faults },
   { NULL, NULL }
 };
