@@ -3,15 +3,22 @@
 tables = \
   %D%/air.tsv \
   %D%/ambiguous.tsv \
+  %D%/cp_ideal.tsv \
   %D%/elements.tsv \
   %D%/exposure.tsv \
   %D%/flammability.tsv \
+  %D%/formation.tsv \
+  %D%/iso6976_1995.tsv \
+  %D%/iso6976_2016.tsv \
+  %D%/iso6976_constants.tsv \
   %D%/messages.tsv \
   %D%/reference_names.tsv \
   %D%/references.tsv \
   %D%/sources.tsv \
   %D%/species.tsv \
-  %D%/units.tsv
+  %D%/units.tsv \
+  %D%/virial.tsv \
+  %D%/viscosity.tsv
 
 # The figures of the equations of reference: built into the program as numbers (src/eos).
 equation_tables = \
