@@ -10,7 +10,7 @@ struct property_tables {
   struct figures *read[PROPERTY_TABLES]; /* null: not yet */
 };
 
-static const char *const names[PROPERTY_TABLES] = { "cp_ideal", "viscosity" };
+static const char *const names[PROPERTY_TABLES] = { "cp_ideal", "viscosity", "virial" };
 
 struct property_tables *
 property_tables_create (const char *directory)
