@@ -66,11 +66,16 @@ TESTS += $(suites)
 endif
 
 # Speed and memory: make bench.
-EXTRA_PROGRAMS = %D%/bench/measure
+EXTRA_PROGRAMS = %D%/bench/equations %D%/bench/measure
 EXTRA_DIST += %D%/bench/bench.sh
 %C%_bench_measure_SOURCES = %D%/bench/measure.c
-CLEANFILES += %D%/bench/measure$(EXEEXT)
+%C%_bench_equations_SOURCES = \
+  %D%/bench/equations.c \
+  %D%/bench/plain_gerg.c \
+  %D%/bench/plain_gerg.h
+%C%_bench_equations_LDADD = $(upto_eos) $(GSL_LIBS)
+CLEANFILES += %D%/bench/equations$(EXEEXT) %D%/bench/measure$(EXEEXT)
 
 .PHONY: bench
-bench: gaswright$(EXEEXT) %D%/bench/measure$(EXEEXT)
+bench: gaswright$(EXEEXT) %D%/bench/equations$(EXEEXT) %D%/bench/measure$(EXEEXT)
 	$(AM_V_at)GASWRIGHT=./gaswright$(EXEEXT) $(SHELL) $(srcdir)/%D%/bench/bench.sh

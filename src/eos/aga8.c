@@ -180,6 +180,13 @@ aga8_set_isotherm (const void *mixture, double T, void *isotherm)
   helmholtz_set_isotherm (&((const struct aga8_mixture *) mixture)->residual, T, isotherm);
 }
 
+static void
+aga8_densities (const void *mixture, const struct state_list *states, double rho[])
+{
+  helmholtz_densities (&((const struct aga8_mixture *) mixture)->residual, HELMHOLTZ_LANES_AVX512,
+                       states, rho);
+}
+
 const struct equation equation_aga8_detail = {
   .name = "AGA8-DETAIL",
   .source = "AGA Report No. 8, Part 1 (2017); ISO 20765-1",
@@ -195,4 +202,5 @@ const struct equation equation_aga8_detail = {
   .residual = helmholtz_residual,
   .densest = helmholtz_densest,
   .roots = helmholtz_roots,
+  .densities = aga8_densities,
 };

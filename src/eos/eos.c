@@ -296,6 +296,35 @@ eos_solve_prepared (const struct eos_mixture *mixture, double T, double p,
   return true;
 }
 
+static double
+density_alone (const struct eos_mixture *mixture, double T, double p)
+{
+  _Alignas (max_align_t) unsigned char isotherm[EOS_ISOTHERM_SIZE];
+  const struct equation *equation = mixture->equation;
+  struct density_roots roots;
+
+  if (!(isfinite (T) && T > 0 && isfinite (p) && p > 0)) {
+    return (double) NAN;
+  }
+  equation->set_isotherm (mixture->prepared, T, isotherm);
+  if (equation->roots != NULL) {
+    return equation->roots (isotherm, p).gas;
+  }
+  return roots_by_iteration (equation, isotherm, T, p, &roots) ? roots.gas : (double) NAN;
+}
+
+void
+eos_densities (const struct eos_mixture *mixture, const struct state_list *states, double rho[])
+{
+  if (mixture->equation->densities != NULL) {
+    mixture->equation->densities (mixture->prepared, states, rho);
+    return;
+  }
+  for (size_t i = 0; i < states->count; i++) {
+    rho[i] = density_alone (mixture, states->T[i], states->p[i]);
+  }
+}
+
 bool
 eos_caloric (const struct eos_mixture *mixture, double T, double rho, struct caloric *caloric)
 {

@@ -38,6 +38,9 @@ enum eos_range {
    as long as they are together below this mole fraction.                                        */
 #define EOS_TRACES 0.005
 
+/* COUNT states, T in K and p in Pa.  */
+struct state_list { size_t count; const double *T, *p; };
+
 struct equation {
   const char *name;                        /* "Peng-Robinson" */
   const char *source;
@@ -69,6 +72,8 @@ struct equation {
   /* The roots in closed form, NAN where they cannot be computed; null: none, they are found by
      the common iteration.                                                                      */
   struct density_roots (*roots) (const void *isotherm, double p);
+  /* The gas densities of many states at once, as in eos_densities; null: one after another.  */
+  void (*densities) (const void *mixture, const struct state_list *, double rho[]);
 };
 
 enum { EOS_ISOTHERM_SIZE = 16384 };
@@ -122,6 +127,10 @@ const struct eos_mixture *eos_prepare (struct arena *, const struct equation *,
                                        const struct composition *) MUST_CHECK;
 bool eos_solve_prepared (const struct eos_mixture *, double T, double p, struct eos_state *,
                          struct fault *) MUST_CHECK;
+/* The gas densities (mol/m3) of many states of a mixture, several at once where the equation and
+   the processor can, within 1e-14 of what eos_solve_prepared gives: 0 where there is only a
+   liquid, NAN where T or p is not positive or there is no root.                                 */
+void eos_densities (const struct eos_mixture *, const struct state_list *, double rho[]);
 /* Caloric properties (eos/caloric.h) of a mixture at T and a density in mol/m3, as eos_solve gives
    it.  False where the equation has none.                                                       */
 bool eos_caloric (const struct eos_mixture *, double T, double rho, struct caloric *) MUST_CHECK;

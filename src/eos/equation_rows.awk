@@ -11,9 +11,21 @@ function complain(what) {
   exit 1
 }
 
-# The number of an exponential, counted as they are met; the first is none at all.
-function exponent_of(c, eta, epsilon, beta, gamma,   key) {
-  key = "{ " (c + 0) ", " (eta + 0) ", " (epsilon + 0) ", " (beta + 0) ", " (gamma + 0) " }"
+# VALUE as a whole number of eighths.
+function eighths_of(value,   k) {
+  k = int(8 * value + 0.5)
+  if (value < 0 || 8 * value - k > 1e-9 || k - 8 * value > 1e-9)
+    complain("an exponential that is not made of eighths of delta and delta^2")
+  return k
+}
+
+# The number of an exponential, counted as they are met; the first is none at all.  phi is delta^c
+# where c is above 2, else (k1 delta + k2 delta^2)/8 - ln(factor).
+function exponent_of(c, eta, epsilon, beta, gamma,   key, k1, k2) {
+  k1 = c == 1 ? 8 : eighths_of(beta - 2 * eta * epsilon)
+  k2 = c == 2 ? 8 : eighths_of(eta)
+  key = "{ " (c + 0) ", " (eta + 0) ", " (epsilon + 0) ", " (beta + 0) ", " (gamma + 0) ", " k1 ", " \
+    k2 ", " sprintf("%.17g", exp(beta * gamma - eta * epsilon * epsilon)) " }"
   if (!(key in exponent)) {
     exponent[key] = exponents
     exponent_text[exponents++] = key

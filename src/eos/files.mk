@@ -19,6 +19,8 @@ noinst_LIBRARIES += %D%/libeos.a
   %D%/gerg_table.h \
   %D%/helmholtz.c \
   %D%/helmholtz.h \
+  %D%/helmholtz_batch.c \
+  %D%/helmholtz_lanes.def \
   %D%/helmholtz_roots.c \
   %D%/ideal.c
 

@@ -158,6 +158,13 @@ gerg_uncertainty (const void *mixture, double T, double p)
   return T >= 250 && T <= 450 && p <= 35e6 ? best : further;
 }
 
+static void
+gerg_densities (const void *mixture, const struct state_list *states, double rho[])
+{
+  helmholtz_densities (&((const struct gerg_mixture *) mixture)->residual, HELMHOLTZ_LANES_AVX512,
+                       states, rho);
+}
+
 const struct equation equation_gerg_2008 = {
   .name = "GERG-2008",
   .source = "O. Kunz, W. Wagner, J. Chem. Eng. Data 57 (2012) 3032-3091; ISO 20765-2",
@@ -174,4 +181,5 @@ const struct equation equation_gerg_2008 = {
   .residual = helmholtz_residual,
   .densest = helmholtz_densest,
   .roots = helmholtz_roots,
+  .densities = gerg_densities,
 };

@@ -57,7 +57,7 @@ group_open (struct helmholtz_isotherm *line, const struct helmholtz_exponent *ph
 {
   struct helmholtz_group *group = &line->groups[line->count++];
 
-  group->phi = *phi;
+  group->phi = phi;
   group->lowest = lowest;
   for (int d = 0; d < HELMHOLTZ_POWERS; d++) {
     group->c[d] = 0;
@@ -90,32 +90,51 @@ helmholtz_set_isotherm (const struct helmholtz_mixture *mixture, double T,
       for (; term < end && term->at.d == d && term->at.exponent == e; term++) {
         sum += term->c * tau_powers_of (&powers, term->at);
       }
-      group->c[d] = sum;
+      group->c[d] = sum * group->phi->factor;
       group->highest = (int) d;
     }
   }
 }
 
-/* exp(-phi) and the derivatives of phi by ln(delta).  */
+/* Powers of delta, exp(-delta/8) and exp(-delta^2/8).  */
+struct delta_powers {
+  double of[HELMHOLTZ_POWERS], e1[HELMHOLTZ_K1], e2[HELMHOLTZ_K2];
+};
+
+/* Each power is the product of two of about half its exponent: short chains, small errors.  */
+static void
+delta_powers_set (struct delta_powers *power, double delta)
+{
+  power->of[0] = power->e1[0] = power->e2[0] = 1;
+  power->of[1] = delta;
+  power->e1[1] = exp (-delta / 8);
+  power->e2[1] = exp (-delta * delta / 8);
+  for (int d = 2; d < HELMHOLTZ_POWERS; d++) {
+    power->of[d] = power->of[d / 2] * power->of[d - d / 2];
+  }
+  for (int k = 2; k < HELMHOLTZ_K1; k++) {
+    power->e1[k] = power->e1[k / 2] * power->e1[k - k / 2];
+  }
+  for (int k = 2; k < HELMHOLTZ_K2; k++) {
+    power->e2[k] = power->e2[k / 2] * power->e2[k - k / 2];
+  }
+}
+
+/* exp(-phi), but for its factor, and the derivatives of phi by ln(delta).  */
 struct damping { double e, s1, s2, s3; };
 
 static struct damping
-damping_of (const struct helmholtz_exponent *phi, const double power[], double delta)
+damping_of (const struct helmholtz_exponent *phi, const struct delta_powers *power)
 {
-  if (phi->power == 0 && !(fabs (phi->beta) > 0)) {
-    return (struct damping) { 1, 0, 0, 0 };
-  } else if (phi->power > 0) {
+  if (phi->power > 2) {
     const double c = phi->power;
-    const double x = power[phi->power];
+    const double x = power->of[phi->power];
     return (struct damping) { exp (-x), c * x, c * c * x, c * c * c * x };
   } else {
-    const double away = delta - phi->epsilon;
-    const double u = 2 * phi->eta * delta * delta;
-    const double v = (phi->beta - 2 * phi->eta * phi->epsilon) * delta;
-    return (struct damping) {
-      exp (-phi->eta * away * away - phi->beta * (delta - phi->gamma)),
-      u + v, 2 * u + v, 4 * u + v,
-    };
+    const double u = 0.25 * phi->k2 * power->of[2];
+    const double v = 0.125 * phi->k1 * power->of[1];
+    return (struct damping) { power->e1[phi->k1] * power->e2[phi->k2], u + v, 2 * u + v,
+                              4 * u + v };
   }
 }
 
@@ -124,52 +143,36 @@ damping_of (const struct helmholtz_exponent *phi, const double power[], double d
      (e P)''  = e (P'' - 2 s1 P' + (s1^2 - s2) P)
      (e P)''' = e (P''' - 3 s1 P'' + 3 (s1^2 - s2) P' - (s1^3 - 3 s1 s2 + s3) P)                 */
 static void
-group_add (const struct helmholtz_group *group, const double power[], double delta,
+group_add (const struct helmholtz_group *group, const struct delta_powers *power,
            struct helmholtz_value *v)
 {
+  const struct damping f = damping_of (group->phi, power);
+  const double w = f.s1 * f.s1 - f.s2;
   double p0 = 0, p1 = 0, p2 = 0, p3 = 0;
 
   for (int d = group->lowest; d <= group->highest; d++) {
-    const double term = group->c[d] * power[d];
     const double k = d;
+    double term = group->c[d] * power->of[d];
     p0 += term;
-    p1 += k * term;
-    p2 += k * k * term;
-    p3 += k * k * k * term;
+    p1 += term *= k;
+    p2 += term *= k;
+    p3 += term *= k;
   }
-  if (group->phi.power == 0 && !(fabs (group->phi.beta) > 0)) {
-    v->a += p0;
-    v->a1 += p1;
-    v->a2 += p2;
-    v->a3 += p3;
-  } else {
-    const struct damping f = damping_of (&group->phi, power, delta);
-    const double w = f.s1 * f.s1 - f.s2;
-    v->a += f.e * p0;
-    v->a1 += f.e * (p1 - f.s1 * p0);
-    v->a2 += f.e * (p2 - 2 * f.s1 * p1 + w * p0);
-    v->a3 += f.e * (p3 - 3 * (f.s1 * p2 - w * p1) - (f.s1 * (w - 2 * f.s2) + f.s3) * p0);
-  }
-}
-
-static void
-delta_powers_set (double power[], double delta)
-{
-  power[0] = 1;
-  for (int d = 1; d < HELMHOLTZ_POWERS; d++) {
-    power[d] = power[d - 1] * delta;
-  }
+  v->a += f.e * p0;
+  v->a1 += f.e * (p1 - f.s1 * p0);
+  v->a2 += f.e * (p2 - 2 * f.s1 * p1 + w * p0);
+  v->a3 += f.e * (p3 - 3 * (f.s1 * p2 - w * p1) - (f.s1 * (w - 2 * f.s2) + f.s3) * p0);
 }
 
 struct helmholtz_value
 helmholtz_at (const struct helmholtz_isotherm *line, double delta)
 {
   struct helmholtz_value v = { 0, 0, 0, 0 };
-  double power[HELMHOLTZ_POWERS];
+  struct delta_powers power;
 
-  delta_powers_set (power, delta);
+  delta_powers_set (&power, delta);
   for (int i = 0; i < line->count; i++) {
-    group_add (&line->groups[i], power, delta, &v);
+    group_add (&line->groups[i], &power, &v);
   }
   return v;
 }
@@ -177,15 +180,14 @@ helmholtz_at (const struct helmholtz_isotherm *line, double delta)
 struct helmholtz_full
 helmholtz_full_at (const struct helmholtz_mixture *mixture, double T, double rho)
 {
-  const double delta = rho / mixture->rho_r;
   struct helmholtz_full v = { 0, 0, 0, 0, 0, 0 };
   struct damping f = { 1, 0, 0, 0 };
-  struct tau_powers powers;
-  double power[HELMHOLTZ_POWERS];
+  struct tau_powers tau;
+  struct delta_powers delta;
   int exponent = -1;
 
-  tau_powers_set (&powers, mixture->T_r / T);
-  delta_powers_set (power, delta);
+  tau_powers_set (&tau, mixture->T_r / T);
+  delta_powers_set (&delta, rho / mixture->rho_r);
   for (size_t i = 0; i < mixture->count; i++) {
     const struct helmholtz_slot at = mixture->terms[i].at;
     const double t = at.whole + at.part / (double) HELMHOLTZ_PARTS;
@@ -193,9 +195,10 @@ helmholtz_full_at (const struct helmholtz_mixture *mixture, double T, double rho
 
     if (at.exponent != exponent) {
       exponent = at.exponent;
-      f = damping_of (&mixture->form->exponents[exponent], power, delta);
+      f = damping_of (&mixture->form->exponents[exponent], &delta);
+      f.e *= mixture->form->exponents[exponent].factor;
     }
-    term = mixture->terms[i].c * tau_powers_of (&powers, at) * power[at.d] * f.e;
+    term = mixture->terms[i].c * tau_powers_of (&tau, at) * delta.of[at.d] * f.e;
     d = at.d - f.s1;
     v.a += term;
     v.d += d * term;

@@ -20,10 +20,21 @@ enum {
   HELMHOLTZ_WHOLE_LEAST = -13, HELMHOLTZ_WHOLE_MOST = 30,
   HELMHOLTZ_POWERS = 10,                   /* d and c are below this */
   HELMHOLTZ_GROUPS = 15,                   /* different phi of one equation */
-  HELMHOLTZ_SLOTS = 160
+  HELMHOLTZ_SLOTS = 160,
+  HELMHOLTZ_K1 = 25, HELMHOLTZ_K2 = 9      /* k1 and k2 are below these */
 };
 
-struct helmholtz_exponent { int power; double eta, epsilon, beta, gamma; };
+/* No root is sought beyond this delta.  */
+#define HELMHOLTZ_DENSEST 5.0
+
+/* phi as published, and as it is worked out: exp(-phi) is exp(-delta^power) where power is above 2,
+   else  factor exp(-delta/8)^k1 exp(-delta^2/8)^k2, so that most phi share two exponentials.    */
+struct helmholtz_exponent {
+  int power;
+  double eta, epsilon, beta, gamma;
+  int k1, k2;
+  double factor;
+};
 
 /* t = whole + part/HELMHOLTZ_PARTS.  Slots are sorted by exponent, then by d.  */
 struct helmholtz_slot { unsigned char exponent, d; signed char whole; unsigned char part; };
@@ -46,9 +57,9 @@ struct helmholtz_mixture {
   struct helmholtz_term terms[HELMHOLTZ_SLOTS];
 };
 
-/* The terms of one phi at a T: polynomial c[lowest..highest] of delta.  */
+/* The terms of one phi at a T: polynomial c[lowest..highest] of delta, the factor of phi in it.  */
 struct helmholtz_group {
-  struct helmholtz_exponent phi;
+  const struct helmholtz_exponent *phi;
   int lowest, highest;
   double c[HELMHOLTZ_POWERS];
 };
@@ -91,5 +102,12 @@ struct helmholtz_full helmholtz_full_at (const struct helmholtz_mixture *, doubl
 struct residual helmholtz_residual (const void *isotherm, double rho);
 double helmholtz_densest (const void *isotherm);
 struct density_roots helmholtz_roots (const void *isotherm, double p);
+
+/* What to use of the processor at most.  */
+enum helmholtz_lanes { HELMHOLTZ_LANES_PLAIN, HELMHOLTZ_LANES_AVX2, HELMHOLTZ_LANES_AVX512 };
+/* The gas density of each state: 0 where there is only a liquid, NAN where there is no root, or T
+   or p is not positive.                                                                         */
+void helmholtz_densities (const struct helmholtz_mixture *, enum helmholtz_lanes,
+                          const struct state_list *, double rho[]);
 
 #endif

@@ -21,7 +21,7 @@ static const double step_bound = 1e-14;
    `densest`, or behind a dense root beyond `liquid`.  Liquids at their triple points are at 3 to
    3.7.                                                                                          */
 static const double stride_first = 0.1, growth = 1.3, stride = 0.05;
-static const double densest = 5, liquid = 1.5;
+static const double densest = HELMHOLTZ_DENSEST, liquid = 1.5;
 
 double
 helmholtz_densest (const void *isotherm)
@@ -38,13 +38,7 @@ second_virial (const struct helmholtz_isotherm *line)
   double B = 0;
 
   for (int i = 0; i < line->count; i++) {
-    const struct helmholtz_group *group = &line->groups[i];
-    const struct helmholtz_exponent *phi = &group->phi;
-    const double at_zero = -phi->eta * phi->epsilon * phi->epsilon + phi->beta * phi->gamma;
-
-    if (fabs (group->c[1]) > 0) {
-      B += group->c[1] * (fabs (at_zero) > 0 ? exp (at_zero) : 1);
-    }
+    B += line->groups[i].c[1];
   }
   return B;
 }

@@ -5,6 +5,7 @@
 set -eu
 program=${GASWRIGHT:-./gaswright}
 measure=tests/bench/measure
+equations=tests/bench/equations
 work=$(mktemp -d)
 trap 'rm -rf "$work"' EXIT
 
@@ -29,3 +30,4 @@ row "statements in a second" \
   "$(awk -v n="$statements" -v t="$1" -v s="$first" 'BEGIN { printf "%.0f", n / (t - s) * 1000 }')" \
   "200000 or more"
 row "resident memory of that" "$3 kB" "does not grow with the input"
+"$equations"

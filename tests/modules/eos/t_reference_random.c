@@ -7,6 +7,7 @@
 
 #include "eos/caloric.h"
 #include "eos/eos.h"
+#include "eos/gerg.h"
 #include "fluids.h"
 #include "gas/composition.h"
 #include "gas/species.h"
@@ -274,6 +275,79 @@ order (void)
   arena_destroy (arena);
 }
 
+/* Many states at once, by each kind of processor there is, against one after another; among them
+   states below the critical temperature, liquids, and what is no state.                         */
+static void
+many_at_once (void)
+{
+  enum { MANY = 203 };
+  double T[MANY], p[MANY], rho[MANY];
+  const struct state_list states = { MANY, T, p };
+  struct arena *arena = arena_create ();
+  uint64_t seed = SEED;
+
+  for (int k = 0; k < 40; k++) {
+    const struct composition *gas = random_gas (arena, &seed);
+    struct gerg_mixture *mixture = ARENA_NEW (arena, struct gerg_mixture);
+
+    GERG->prepare (gas, mixture);
+    for (int i = 0; i < MANY; i++) {
+      T[i] = 90 + 600 * fluid_chance (&seed);
+      p[i] = 70e6 * pow (1e-6, fluid_chance (&seed));
+    }
+    T[17] = 0;
+    T[18] = -300;
+    p[19] = -1;
+    p[20] = (double) NAN;
+    T[21] = HUGE_VAL;
+    for (int lanes = HELMHOLTZ_LANES_PLAIN; lanes <= HELMHOLTZ_LANES_AVX512; lanes++) {
+      helmholtz_densities (&mixture->residual, (enum helmholtz_lanes) lanes, &states, rho);
+      for (int i = 0; i < MANY; i++) {
+        struct eos_state one = { .density = 0 };
+        struct fault fault;
+
+        test_about ("gas %d, lanes %d, %g K, %g Pa", k, lanes, T[i], p[i]);
+        fault_init (&fault, arena);
+        if (eos_solve (GERG, gas, T[i], p[i], &one, &fault)) {
+          NEAR (rho[i], one.density, 1e-14);
+        } else if (fault.kind == MESSAGE_STATE_LIQUID) {
+          CHECK (!(rho[i] > 0) && !(rho[i] < 0));
+        } else {
+          CHECK (i >= 17 && i <= 21);
+          CHECK (isnan (rho[i]));
+        }
+      }
+    }
+  }
+  arena_destroy (arena);
+}
+
+/* The same through the interface, for an equation that has no way of its own too.  */
+static void
+many_by_interface (void)
+{
+  static const struct equation *const three[] = { &equation_gerg_2008, &equation_aga8_detail,
+                                                  &equation_peng_robinson };
+  struct arena *arena = arena_create ();
+  const struct composition *gas = fluid_mixture (arena, "CH4=0.9;CO2=0.06;H2=0.04");
+  const double T[] = { 300, 150, 320, 280, 400 }, p[] = { 1e5, 1e6, 2e7, 5e6, 3e7 };
+  double rho[5];
+
+  for (size_t e = 0; e < 3; e++) {
+    eos_densities (eos_prepare (arena, three[e], gas), &(struct state_list) { 5, T, p }, rho);
+    for (int i = 0; i < 5; i++) {
+      struct eos_state one = { .density = 0 };
+      struct fault fault;
+
+      test_about ("%s, %g K, %g Pa", three[e]->name, T[i], p[i]);
+      fault_init (&fault, arena);
+      CHECK (eos_solve (three[e], gas, T[i], p[i], &one, &fault));
+      NEAR (rho[i], one.density, 1e-14);
+    }
+  }
+  arena_destroy (arena);
+}
+
 int
 main (int argc, char *argv[])
 {
@@ -282,6 +356,8 @@ main (int argc, char *argv[])
     { "caloric properties by differences", caloric_by_differences },
     { "limits", limits },
     { "order of components", order },
+    { "many at once", many_at_once },
+    { "many by the interface", many_by_interface },
     { NULL, NULL }
   };
 
