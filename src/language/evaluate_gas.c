@@ -14,11 +14,19 @@
 
 /* ---- Gases and their totals ---- */
 
+/* A figure that may differ from WHOLE only in a digit that is not usually told.  */
+static const char *
+close_text (struct evaluation *ev, double value, double whole)
+{
+  bool hidden = value != whole && fabs (value / whole - 1) < 1e-5;
+  return hidden ? arena_format (ev->arena, "%.9g", value) : figure_text (ev->arena, value);
+}
+
 /* A total on the basis of the whole: "99.37 mol%".  */
 static const char *
 total_text (struct evaluation *ev, const struct analysis *analysis, double total)
 {
-  return arena_format (ev->arena, "%s %s", figure_text (ev->arena, 100 * total),
+  return arena_format (ev->arena, "%s %s", close_text (ev, 100 * total, 100),
                        analysis->whole == WHOLE_MASS ? "mass%" : "mol%");
 }
 
@@ -62,7 +70,7 @@ gas_of_analysis (struct evaluation *ev, const struct analysis *analysis,
   }
   if (gas->closed && fabs (gas->scaled - 1) > SCALING_WORTH_A_NOTE && ev->result) {
     note (ev, MESSAGE_NOTE_SCALED, named->name ? named->name : "the list",
-          figure_text (ev->arena, gas->scaled),
+          close_text (ev, gas->scaled, 1),
           total_text (ev, analysis, analysis_total (analysis)));
   }
   return gas;
