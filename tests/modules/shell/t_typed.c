@@ -128,10 +128,11 @@ is_offered (const struct session *session, struct arena *arena, const char *line
             const char *want)
 {
   const size_t n = strlen (line);
-  size_t start = n;
+  const char *quote = strrchr (line, '"');      /* inside quotes the word is all behind them */
+  size_t start = quote != NULL ? (size_t) (quote + 1 - line) : n;
   struct completion found;
 
-  while (start > 0 && strchr (" ,;=\"", line[start - 1]) == NULL)
+  while (quote == NULL && start > 0 && strchr (" ,;=", line[start - 1]) == NULL)
     start--;
   completion_find (&found, arena, session, line, start, n);
   for (size_t i = 0; i < found.count; i++) {
