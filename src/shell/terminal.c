@@ -49,9 +49,10 @@ struct terminal {
 /* The library calls its functions without anything of ours.  */
 static struct terminal *current;
 
-/* What a read gives while the line is being given up.  '\n' ends an ordinary line; where the library
-   asks again, because it waits for the end of a paste, the next two get it out of there.  A question
-   of completion must be broken off at once: the library has already given back what it lists.   */
+/* What a read gives while the line is being given up.  '\n' ends an ordinary line; where the
+   library asks again, because it waits for the end of a paste, the next two get it out of there.
+   A question of completion must be broken off at once: the library has already given back what it
+   lists.                                                                                        */
 static int
 key_of_interrupt (void)
 {
