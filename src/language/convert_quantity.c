@@ -223,11 +223,15 @@ plain_number_in (struct conversion *c)
 static const char *
 family_basis (struct conversion *c)
 {
-  return c->unit->family_power == 0 ? NULL
-         : c->unit->family_power == 1 && c->ev->describe
-             ? arena_format (c->ev->arena, "%s, ideal-gas volume",
-                             c->ev->settings->family[c->unit->family].text)
-             : c->ev->settings->family[c->unit->family].text;
+  if (c->unit->family_power == 0) {
+    return NULL;
+  }
+  const char *text = c->ev->settings->family[c->unit->family].text;
+  bool real = c->ev->settings->real_volumes ? !(c->value->words & WORD_IDEAL)
+                                            : (c->value->words & WORD_REAL) != 0;
+  return c->unit->family_power == 1 && c->ev->describe
+           ? arena_format (c->ev->arena, "%s, %s", text, real ? "real volume" : "ideal-gas volume")
+           : text;
 }
 
 bool
@@ -273,7 +277,7 @@ convert_quantity (struct conversion *c)
   }
   struct standing standing = { c->what,
                                v->gas && v->gas->closed && c->ev->describe
-                                 ? moisture_word (c->ev, v->gas->closed) : NULL,
+                                 ? moisture_word (c->ev, v->gas->closed) : v->moisture,
                                v->basis ? v->basis : family_basis (c) };
   return conversion_add (c, v->si, &standing);
 }

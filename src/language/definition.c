@@ -173,6 +173,9 @@ let_body (struct evaluation *ev, const struct statement *s, struct value *out)
     }
     *out = value_number (figures.at[0].value);
     out->unit = figures.at[0].unit;
+    out->words = s->targets->words;
+    out->basis = figures.at[0].basis;
+    out->moisture = figures.at[0].moisture;
     if (out->unit) {
       out->si = unit_to_si (out->unit, out->si);
       out->measure = measure_of_unit (out->unit);

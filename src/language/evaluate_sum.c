@@ -2,6 +2,7 @@
 #include "language/evaluation.h"
 
 #include <math.h>
+#include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/session_private.h"
@@ -85,6 +86,9 @@ add_quantities (struct evaluation *ev, const struct node *node, struct value *a,
   }
   /* A vacuum grows when pressure falls; both are absolute here, so a difference just adds.  */
   a->si = minus ? a->si - b->si : a->si + b->si;
+  if (!a->basis || !b->basis || strcmp (a->basis, b->basis) != 0) {
+    a->basis = NULL;                  /* counted differently: the sum is counted as neither */
+  }
   return true;
 }
 
@@ -271,10 +275,13 @@ multiply_quantities (struct evaluation *ev, const struct node *node, struct valu
   if (a_plain && !divide) {
     a->unit = b->unit;
     a->words = b->words;
+    a->basis = b->basis;
+    a->moisture = b->moisture;
     *m = b->measure;
     return true;
   }
   a->unit = NULL;
+  a->basis = a->moisture = NULL;
   m->dimension = divide ? dimension_over (m->dimension, b->measure.dimension)
                         : dimension_times (m->dimension, b->measure.dimension);
   m->family = m->family_power != 0 ? m->family : b->measure.family;
