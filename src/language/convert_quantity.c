@@ -215,7 +215,8 @@ static bool
 plain_number_in (struct conversion *c)
 {
   struct standing standing = { c->what, NULL, NULL };
-  return c->value->measure.ratio == RATIO_NONE && c->unit->ratio == RATIO_PLAIN
+  return c->value->measure.ratio == RATIO_NONE && c->unit->ratio != RATIO_NONE
+         && c->unit->ratio != RATIO_ENERGY && c->unit->sort == UNIT_SCALE
            ? conversion_add (c, c->value->si, &standing)
            : conversion_mismatch (c, "the units measure different things");
 }
@@ -322,7 +323,12 @@ convert_specific (struct conversion *c)
   const struct composition *gas = gas_composition (c->ev, v->gas, c->subject_at);
   struct dimension from, to;
   double from_per, to_per;
-  if (!gas || !per_mole (c, v->unit, gas, &from, &from_per)
+  /* A figure that was computed has no unit of its own.  */
+  const struct unit computed = {
+    .spelling = "the figure", .factor = 1, .dimension = v->measure.dimension,
+    .family = v->measure.family, .family_power = v->measure.family_power
+  };
+  if (!gas || !per_mole (c, v->unit ? v->unit : &computed, gas, &from, &from_per)
       || !per_mole (c, c->unit, gas, &to, &to_per)) {
     return false;
   }

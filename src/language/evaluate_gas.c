@@ -99,7 +99,8 @@ gas_composition (struct evaluation *ev, const struct gas_value *gas, struct plac
   const char *name = gas->name ? gas->name : "the list";
   fault_set_at (ev->fault, MESSAGE_GAS_OPEN, at, name,
                 total_text (ev, gas->analysis, analysis_total (gas->analysis)));
-  fault_hint (ev->fault, "%s normalised, %s normalised into %s", name, name,
+  const char *shown = gas->name ? gas->name : "(...)";
+  fault_hint (ev->fault, "%s normalised, %s normalised into %s", shown, shown,
               usual_balance (gas->analysis));
   return NULL;
 }
@@ -171,6 +172,13 @@ note_other_tracer (struct evaluation *ev, const struct change_of *c,
   }
 }
 
+/* The place behind another one.  */
+static struct place
+behind (struct place at)
+{
+  return (struct place) { at.line, at.last + 1, at.last + 1 };
+}
+
 /* `without air [by N2]`: the tracer sets how much, the other parts go with it.  */
 static const struct analysis *
 without_gas (struct evaluation *ev, const struct change_of *c, const struct analysis *before,
@@ -178,6 +186,12 @@ without_gas (struct evaluation *ev, const struct change_of *c, const struct anal
 {
   struct species_set tracers = { { ev->session->oxygen }, 1 };
   struct treatment did;
+  if (!c->node->c && !(composition_fraction (gas, ev->session->oxygen) > 0)) {
+    fault_set_at (ev->fault, MESSAGE_UNFINISHED, behind (c->node->b->at), NULL, NULL);
+    fault_hint (ev->fault, "say which of its parts sets how much: without %s by %s",
+                c->node->b->text, gas->species[0]->key);
+    return NULL;
+  }
   if (c->node->c && !species_named (ev, c->node->c, &tracers)) {
     return NULL;
   }
@@ -216,6 +230,12 @@ without (struct evaluation *ev, const struct change_of *c, const struct analysis
   }
   struct species_set set;
   if (!species_named (ev, what, &set)) {
+    return NULL;
+  }
+  if (c->node->c) {
+    fault_set_at (ev->fault, MESSAGE_KIND_WRONG, c->node->c->at,
+                  "a component is taken away whole, without a tracer", NULL);
+    fault_hint (ev->fault, "%s without %s", c->name, what->text);
     return NULL;
   }
   const struct analysis *after = before;
@@ -374,7 +394,9 @@ keep_share (struct evaluation *ev, const struct node *share, const struct compos
   }
   for (size_t i = 0; i < gas->count; i++)
     for (size_t k = 0; k < set.count; k++)
-      if (gas->species[i] == set.at[k]) {
+      if (gas->species[i] == set.at[k] && !isnan (kept[i])) {
+        return fault_set_at (ev->fault, MESSAGE_GAS_TWICE, share->at, gas->species[i]->key, NULL);
+      } else if (gas->species[i] == set.at[k]) {
         kept[i] = x;
         found = true;
       }
@@ -404,12 +426,15 @@ evaluate_keeping (struct evaluation *ev, const struct node *node, struct value *
       return false;
     }
   for (size_t i = 0; i < gas->count; i++) {
-    kept[i] = rest;
+    kept[i] = UNSTATED;
   }
   for (const struct node *share = node->items; share; share = share->next)
     if (!is_rest (share) && !keep_share (ev, share, gas, kept)) {
       return false;
     }
+  for (size_t i = 0; i < gas->count; i++) {
+    kept[i] = isnan (kept[i]) ? rest : kept[i];
+  }
   if (!stream_keeping (ev->arena, &out->stream, kept, &out->stream, ev->fault)) {
     fault_place (ev->fault, node->at);
     return false;
