@@ -36,7 +36,7 @@ add_atoms (struct atoms *atoms, const char *symbol, unsigned count)
   return atoms->of[i].count <= MOST_ATOMS;
 }
 
-/* count = [ digit { digit } ], 1 where there is none; it begins with no 0, which is a mistyped O.  */
+/* count = [ digit { digit } ], 1 where there is none.  One that begins with 0 is a mistyped O.  */
 static bool
 read_count (struct scan *scan, unsigned *count)
 {

@@ -258,6 +258,7 @@ add_answers (struct result *result, const struct figures *figures)
     struct answer *a = result_answer (result);
     a->what = f->what;
     a->label = f->label;
+    a->named = f->named;
     a->value = f->value;
     a->unit = f->unit_text;
     a->moisture = f->moisture;

@@ -100,8 +100,10 @@ gas_composition (struct evaluation *ev, const struct gas_value *gas, struct plac
   fault_set_at (ev->fault, MESSAGE_GAS_OPEN, at, name,
                 total_text (ev, gas->analysis, analysis_total (gas->analysis)));
   const char *shown = gas->name ? gas->name : "(...)";
-  fault_hint (ev->fault, "%s normalised, %s normalised into %s", shown, shown,
-              usual_balance (gas->analysis));
+  if (gas->analysis->count > 0) {
+    fault_hint (ev->fault, "%s normalised, %s normalised into %s", shown, shown,
+                usual_balance (gas->analysis));
+  }
   return NULL;
 }
 

@@ -322,7 +322,7 @@ static bool
 divide_likes (struct evaluation *ev, const struct node *node, struct value *a,
               const struct value *b)
 {
-  double top[2], bottom[2];
+  double top[2] = { 0, 0 }, bottom[2] = { 0, 0 };
   const struct value *v[2] = { a, b };
   double *to[2] = { top, bottom };
   bool flow[2];

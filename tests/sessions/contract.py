@@ -193,7 +193,7 @@ def main():
     tap.tell([line for line in plain.splitlines() if not line.isascii()],
              "text is plain where the locale is")
     same = [a for a, b in zip(plain.replace("+/-", "±").splitlines(), out["text"].splitlines())
-            if not b.isascii() and re.sub(r"\s+", " ", a) != re.sub(r"\s+", " ", b)
+            if not b.isascii() and re.sub(r"\s+", " ", a) != re.sub(r"\s+", " ", b.replace("₄", "4"))
             and "±" in b and "show" not in b]
     tap.tell(same, "and says the same")
     return tap.finish()
