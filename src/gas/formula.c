@@ -36,7 +36,7 @@ add_atoms (struct atoms *atoms, const char *symbol, unsigned count)
   return atoms->of[i].count <= MOST_ATOMS;
 }
 
-/* count = [ digit { digit } ], not 0; 1 where there is none.  */
+/* count = [ digit { digit } ], 1 where there is none.  One that begins with 0 is a mistyped O.  */
 static bool
 read_count (struct scan *scan, unsigned *count)
 {
@@ -46,6 +46,8 @@ read_count (struct scan *scan, unsigned *count)
     *count = 1;
     return true;
   }
+  if (*scan->at == '0')
+    return false;
   while (scan->at < scan->end && is_digit (*scan->at) && value <= MOST_ATOMS)
     value = 10 * value + (unsigned) (*scan->at++ - '0');
   *count = value;

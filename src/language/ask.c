@@ -258,6 +258,7 @@ add_answers (struct result *result, const struct figures *figures)
     struct answer *a = result_answer (result);
     a->what = f->what;
     a->label = f->label;
+    a->named = f->named;
     a->value = f->value;
     a->unit = f->unit_text;
     a->moisture = f->moisture;
@@ -277,7 +278,9 @@ caution_value (struct evaluation *ev, const struct statement *s, const struct va
   } else if (value->kind == VALUE_GAS || value->kind == VALUE_PART) {
     gas = value->gas->closed;
   }
-  if (made && gas) {
+  /* A sum of components makes no gas.  */
+  bool sum_of_parts = value->kind == VALUE_PART && made == s->value;
+  if (made && gas && !sum_of_parts) {
     caution_gas (ev->result, gas, node_text (ev->arena, s, made));
   }
 }

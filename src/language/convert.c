@@ -32,7 +32,9 @@ conversion_add (struct conversion *c, double si, const struct standing *standing
     return fault_set_at (c->ev->fault, MESSAGE_NOT_FINITE, c->at, NULL, NULL);
   }
   struct figure figure = { standing->what, value, c->unit, c->unit_text, standing->moisture,
-                           standing->basis, c->label };
+                           standing->basis, c->label,
+                           c->value->kind == VALUE_PART || c->value->kind == VALUE_TRACE
+                           || (c->value->kind == VALUE_QUANTITY && c->value->basis) };
   figures_add (c->ev, c->figures, &figure);
   return true;
 }
@@ -86,6 +88,12 @@ settle_unit (struct conversion *c, const struct value *v)
     if (!unit) {
       return false;
     }
+  }
+  if (!unit && (v->kind == VALUE_TRACE || v->kind == VALUE_SPECIFIC)) {
+    /* A figure that was computed has no unit of its own.  */
+    return fault_set_at (c->ev->fault, MESSAGE_UNIT_EXPECTED, c->at,
+                         v->kind == VALUE_TRACE ? "say what it is wanted in: ... in mg/Nm3"
+                                                : "say what it is wanted in: ... in kWh/kg", NULL);
   }
   c->unit = unit;
   c->unit_text = unit ? unit->spelling : "";
@@ -150,6 +158,25 @@ convert_ratio (struct conversion *c)
   return conversion_add (c, v->moles, &standing);
 }
 
+/* Does the value have what the target's words ask for?  */
+static bool
+target_fits (struct conversion *c)
+{
+  const struct value *v = c->value;
+  if (c->counted_as && v->kind != VALUE_PART && v->kind != VALUE_TRACE) {
+    return fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->counted_as->at,
+                         "only a component is counted as another", NULL);
+  }
+  bool figure = v->kind == VALUE_QUANTITY && v->measure.ratio == RATIO_NONE && !v->gas
+                && (dimension_equal (v->measure.dimension, DIMENSION_TEMPERATURE)
+                    || dimension_equal (v->measure.dimension, DIMENSION_PRESSURE)
+                    || dimension_equal (v->measure.dimension, DIMENSION_MASS));
+  if (figure && (c->words & (WORD_DRY | WORD_WET))) {
+    return conversion_mismatch (c, "dry and wet are words for gas");
+  }
+  return true;
+}
+
 bool
 convert_value (struct evaluation *ev, const struct value *value, const struct target *target,
                const struct subject *subject, struct figures *figures)
@@ -158,6 +185,9 @@ convert_value (struct evaluation *ev, const struct value *value, const struct ta
                           .at = subject->at, .subject_at = subject->at,
                           .state = state_empty (subject->at) };
   if (target ? !settle_target (&c, target) : !settle_unit (&c, value)) {
+    return false;
+  }
+  if (!target_fits (&c)) {
     return false;
   }
   switch (value->kind) {
@@ -255,10 +285,10 @@ oxygen_factor (struct conversion *c, double measured, const char *what, double *
   }
   if (ev->result) {
     note (ev, MESSAGE_NOTE_OXYGEN_CORRECTION, what, share_text (ev->arena, measured),
-          arena_format (ev->arena, "(%s - %s)/(%s - %s) = %s", figure_text (ev->arena, 100 * A),
-                        figure_text (ev->arena, 100 * reference), figure_text (ev->arena, 100 * A),
-                        figure_text (ev->arena, 100 * measured),
-                        figure_text (ev->arena, *factor)));
+          arena_format (ev->arena, "(%s - %s)/(%s - %s) = %s, oxygen in air %s",
+                        figure_text (ev->arena, 100 * A), figure_text (ev->arena, 100 * reference),
+                        figure_text (ev->arena, 100 * A), figure_text (ev->arena, 100 * measured),
+                        figure_text (ev->arena, *factor), share_text (ev->arena, A)));
     note (ev, *factor < 1 ? MESSAGE_NOTE_OXYGEN_LOWERS : MESSAGE_NOTE_OXYGEN_RAISES, NULL, NULL,
           NULL);
     note (ev, MESSAGE_CAUTION_EMISSION, NULL, NULL, NULL);

@@ -215,7 +215,8 @@ static bool
 plain_number_in (struct conversion *c)
 {
   struct standing standing = { c->what, NULL, NULL };
-  return c->value->measure.ratio == RATIO_NONE && c->unit->ratio == RATIO_PLAIN
+  return c->value->measure.ratio == RATIO_NONE && c->unit->ratio != RATIO_NONE
+         && c->unit->ratio != RATIO_ENERGY && c->unit->sort == UNIT_SCALE
            ? conversion_add (c, c->value->si, &standing)
            : conversion_mismatch (c, "the units measure different things");
 }
@@ -223,11 +224,15 @@ plain_number_in (struct conversion *c)
 static const char *
 family_basis (struct conversion *c)
 {
-  return c->unit->family_power == 0 ? NULL
-         : c->unit->family_power == 1 && c->ev->describe
-             ? arena_format (c->ev->arena, "%s, ideal-gas volume",
-                             c->ev->settings->family[c->unit->family].text)
-             : c->ev->settings->family[c->unit->family].text;
+  if (c->unit->family_power == 0) {
+    return NULL;
+  }
+  const char *text = c->ev->settings->family[c->unit->family].text;
+  bool real = c->ev->settings->real_volumes ? !(c->value->words & WORD_IDEAL)
+                                            : (c->value->words & WORD_REAL) != 0;
+  return c->unit->family_power == 1 && c->ev->describe
+           ? arena_format (c->ev->arena, "%s, %s", text, real ? "real volume" : "ideal-gas volume")
+           : text;
 }
 
 bool
@@ -273,7 +278,7 @@ convert_quantity (struct conversion *c)
   }
   struct standing standing = { c->what,
                                v->gas && v->gas->closed && c->ev->describe
-                                 ? moisture_word (c->ev, v->gas->closed) : NULL,
+                                 ? moisture_word (c->ev, v->gas->closed) : v->moisture,
                                v->basis ? v->basis : family_basis (c) };
   return conversion_add (c, v->si, &standing);
 }
@@ -318,7 +323,12 @@ convert_specific (struct conversion *c)
   const struct composition *gas = gas_composition (c->ev, v->gas, c->subject_at);
   struct dimension from, to;
   double from_per, to_per;
-  if (!gas || !per_mole (c, v->unit, gas, &from, &from_per)
+  /* A figure that was computed has no unit of its own.  */
+  const struct unit computed = {
+    .spelling = "the figure", .factor = 1, .dimension = v->measure.dimension,
+    .family = v->measure.family, .family_power = v->measure.family_power
+  };
+  if (!gas || !per_mole (c, v->unit ? v->unit : &computed, gas, &from, &from_per)
       || !per_mole (c, c->unit, gas, &to, &to_per)) {
     return false;
   }

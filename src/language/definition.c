@@ -173,6 +173,9 @@ let_body (struct evaluation *ev, const struct statement *s, struct value *out)
     }
     *out = value_number (figures.at[0].value);
     out->unit = figures.at[0].unit;
+    out->words = s->targets->words;
+    out->basis = figures.at[0].basis;
+    out->moisture = figures.at[0].moisture;
     if (out->unit) {
       out->si = unit_to_si (out->unit, out->si);
       out->measure = measure_of_unit (out->unit);
@@ -230,6 +233,14 @@ body (struct evaluation *ev, const struct definition *d, struct value *out, stru
   return done;
 }
 
+/* Can what a definition came to be computed with?  */
+static bool
+is_finite (const struct definition *d, const struct value *value)
+{
+  return d->kind == NAME_QUANTITY && value->kind == VALUE_QUANTITY ? isfinite (value->si)
+         : d->kind == NAME_STREAM ? isfinite (value->stream.moles) : true;
+}
+
 bool
 definition_refresh (struct session *session, struct definition *d, struct fault *fault)
 {
@@ -244,6 +255,9 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
   ev.arena = d->cache;
   if (!body (&ev, d, &value, &state)) {
     return false;
+  }
+  if (!is_finite (d, &value)) {
+    return fault_set_at (fault, MESSAGE_NOT_FINITE, d->statement->value->at, NULL, NULL);
   }
   if (d->kind == NAME_GAS && value.gas->closed) {
     caution_gas (&notes, value.gas->closed, d->name);
@@ -399,7 +413,8 @@ caution_gas (struct result *result, const struct composition *gas, const char *n
     struct remark *remark;
     switch (h->kind) {
     case HAZARD_TOXIC:
-      remark = result_remark (result, MESSAGE_CAUTION_TOXIC, h->species->key, ratio);
+      remark = result_remark (result, MESSAGE_CAUTION_TOXIC,
+                              arena_format (arena, "%s of %s", h->species->key, name), ratio);
       remark->fact[2] = share_text (arena, h->limit);
       remark->fact[3] = h->species->exposure_source;
       break;
@@ -411,7 +426,7 @@ caution_gas (struct result *result, const struct composition *gas, const char *n
     case HAZARD_OXYGEN_POOR:
       result_remark (result, h->kind == HAZARD_OXYGEN_RICH ? MESSAGE_CAUTION_OXYGEN_RICH
                                                            : MESSAGE_CAUTION_OXYGEN_POOR,
-                     share_text (arena, h->ratio * h->limit), NULL);
+                     share_text (arena, h->ratio * h->limit), name);
       break;
     }
   }

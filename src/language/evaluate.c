@@ -69,9 +69,16 @@ quantity_node (struct evaluation *ev, const struct node *node, struct value *out
   out->words = node->words;
   out->measure = measure_of_unit (node->unit);
   out->si = unit_to_si (node->unit, number);
+  if (!isfinite (out->si)) {
+    return fault_set_at (ev->fault, MESSAGE_NOT_FINITE, node->at, NULL, NULL);
+  }
   if (node->unit->sort == UNIT_GAUGE || node->unit->sort == UNIT_VACUUM) {
     out->si = above_barometer (ev, node, out->si);
-  } else if (node->unit->sort == UNIT_POINT && out->si < 0) {
+    return out->si >= 0
+           || fault_set_at (ev->fault, MESSAGE_RANGE, node->at,
+                            "an absolute pressure below zero: less than a perfect vacuum", NULL);
+  }
+  if (node->unit->sort == UNIT_POINT && out->si < 0) {
     return fault_set_at (ev->fault, MESSAGE_RANGE, node->at,
                          "a temperature below absolute zero", NULL);
   }
@@ -94,6 +101,17 @@ evaluate_quantity (struct evaluation *ev, const struct node *node, struct value 
                        "a number or a quantity is needed here", NULL);
 }
 
+/* Does a state change what a quantity means?  That of a mass, a pressure, a temperature or a bare
+   number is the same everywhere.                                                                */
+static bool
+takes_state (const struct value *v)
+{
+  struct dimension d = v->measure.dimension;
+  bool share = v->measure.ratio != RATIO_NONE;
+  return share || !(dimension_equal (d, DIMENSION_MASS) || dimension_equal (d, DIMENSION_PRESSURE)
+                    || dimension_equal (d, DIMENSION_TEMPERATURE) || dimension_is_none (d));
+}
+
 /* What a state does to something that is known already.  */
 static bool
 bring_to_state (struct evaluation *ev, struct value *v, const struct state *state,
@@ -111,6 +129,9 @@ bring_to_state (struct evaluation *ev, struct value *v, const struct state *stat
     return v->gas != NULL;
   }
   case VALUE_QUANTITY:
+    if (!takes_state (v)) {
+      break;
+    }
     quantity_at_state (v, state);
     return true;
   case VALUE_PART:

@@ -14,11 +14,19 @@
 
 /* ---- Gases and their totals ---- */
 
+/* A figure that may differ from WHOLE only in a digit that is not usually told.  */
+static const char *
+close_text (struct evaluation *ev, double value, double whole)
+{
+  bool hidden = value != whole && fabs (value / whole - 1) < 1e-5;
+  return hidden ? arena_format (ev->arena, "%.9g", value) : figure_text (ev->arena, value);
+}
+
 /* A total on the basis of the whole: "99.37 mol%".  */
 static const char *
 total_text (struct evaluation *ev, const struct analysis *analysis, double total)
 {
-  return arena_format (ev->arena, "%s %s", figure_text (ev->arena, 100 * total),
+  return arena_format (ev->arena, "%s %s", close_text (ev, 100 * total, 100),
                        analysis->whole == WHOLE_MASS ? "mass%" : "mol%");
 }
 
@@ -62,7 +70,7 @@ gas_of_analysis (struct evaluation *ev, const struct analysis *analysis,
   }
   if (gas->closed && fabs (gas->scaled - 1) > SCALING_WORTH_A_NOTE && ev->result) {
     note (ev, MESSAGE_NOTE_SCALED, named->name ? named->name : "the list",
-          figure_text (ev->arena, gas->scaled),
+          close_text (ev, gas->scaled, 1),
           total_text (ev, analysis, analysis_total (analysis)));
   }
   return gas;
@@ -91,8 +99,11 @@ gas_composition (struct evaluation *ev, const struct gas_value *gas, struct plac
   const char *name = gas->name ? gas->name : "the list";
   fault_set_at (ev->fault, MESSAGE_GAS_OPEN, at, name,
                 total_text (ev, gas->analysis, analysis_total (gas->analysis)));
-  fault_hint (ev->fault, "%s normalised, %s normalised into %s", name, name,
-              usual_balance (gas->analysis));
+  const char *shown = gas->name ? gas->name : "(...)";
+  if (gas->analysis->count > 0) {
+    fault_hint (ev->fault, "%s normalised, %s normalised into %s", shown, shown,
+                usual_balance (gas->analysis));
+  }
   return NULL;
 }
 
@@ -163,6 +174,13 @@ note_other_tracer (struct evaluation *ev, const struct change_of *c,
   }
 }
 
+/* The place behind another one.  */
+static struct place
+behind (struct place at)
+{
+  return (struct place) { at.line, at.last + 1, at.last + 1 };
+}
+
 /* `without air [by N2]`: the tracer sets how much, the other parts go with it.  */
 static const struct analysis *
 without_gas (struct evaluation *ev, const struct change_of *c, const struct analysis *before,
@@ -170,6 +188,12 @@ without_gas (struct evaluation *ev, const struct change_of *c, const struct anal
 {
   struct species_set tracers = { { ev->session->oxygen }, 1 };
   struct treatment did;
+  if (!c->node->c && !(composition_fraction (gas, ev->session->oxygen) > 0)) {
+    fault_set_at (ev->fault, MESSAGE_UNFINISHED, behind (c->node->b->at), NULL, NULL);
+    fault_hint (ev->fault, "say which of its parts sets how much: without %s by %s",
+                c->node->b->text, gas->species[0]->key);
+    return NULL;
+  }
   if (c->node->c && !species_named (ev, c->node->c, &tracers)) {
     return NULL;
   }
@@ -208,6 +232,12 @@ without (struct evaluation *ev, const struct change_of *c, const struct analysis
   }
   struct species_set set;
   if (!species_named (ev, what, &set)) {
+    return NULL;
+  }
+  if (c->node->c) {
+    fault_set_at (ev->fault, MESSAGE_KIND_WRONG, c->node->c->at,
+                  "a component is taken away whole, without a tracer", NULL);
+    fault_hint (ev->fault, "%s without %s", c->name, what->text);
     return NULL;
   }
   const struct analysis *after = before;
@@ -366,7 +396,9 @@ keep_share (struct evaluation *ev, const struct node *share, const struct compos
   }
   for (size_t i = 0; i < gas->count; i++)
     for (size_t k = 0; k < set.count; k++)
-      if (gas->species[i] == set.at[k]) {
+      if (gas->species[i] == set.at[k] && !isnan (kept[i])) {
+        return fault_set_at (ev->fault, MESSAGE_GAS_TWICE, share->at, gas->species[i]->key, NULL);
+      } else if (gas->species[i] == set.at[k]) {
         kept[i] = x;
         found = true;
       }
@@ -396,12 +428,15 @@ evaluate_keeping (struct evaluation *ev, const struct node *node, struct value *
       return false;
     }
   for (size_t i = 0; i < gas->count; i++) {
-    kept[i] = rest;
+    kept[i] = UNSTATED;
   }
   for (const struct node *share = node->items; share; share = share->next)
     if (!is_rest (share) && !keep_share (ev, share, gas, kept)) {
       return false;
     }
+  for (size_t i = 0; i < gas->count; i++) {
+    kept[i] = isnan (kept[i]) ? rest : kept[i];
+  }
   if (!stream_keeping (ev->arena, &out->stream, kept, &out->stream, ev->fault)) {
     fault_place (ev->fault, node->at);
     return false;

@@ -188,6 +188,9 @@ stated_amount (struct evaluation *ev, const struct node *list, const struct node
   if (f.si < 0) {
     return fault_set_at (ev->fault, MESSAGE_AMOUNT_NEGATIVE, part->a->at, part->text, NULL);
   }
+  if (!isfinite (f.si)) {
+    return fault_set_at (ev->fault, MESSAGE_NOT_FINITE, part->a->at, NULL, NULL);
+  }
   out->amount = f.si;
   switch (f.unit->ratio) {
   case RATIO_MOLE:

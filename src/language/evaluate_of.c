@@ -152,9 +152,11 @@ trace_volume (struct evaluation *ev, const struct node *figure, const struct val
                                 (quantity->words & WORD_REAL) != 0, Vm);
   }
   if (isnan (trace->T) || isnan (trace->p)) {
-    fault_set_at (ev->fault, MESSAGE_STATE_MISSING, figure->unit_at, figure->unit_text, NULL);
-    fault_hint (ev->fault, "%s %s of %s at 20 degC, 1 bar(a)", figure->figure, figure->unit_text,
-                trace->part);
+    bool typed = figure->figure && figure->unit_text;
+    fault_set_at (ev->fault, MESSAGE_STATE_MISSING, typed ? figure->unit_at : figure->at,
+                  typed ? figure->unit_text : "the figure", NULL);
+    fault_hint (ev->fault, "%s %s of %s at 20 degC, 1 bar(a)", typed ? figure->figure : "...",
+                typed ? figure->unit_text : "", trace->part);
     return false;
   }
   double Z;
@@ -210,6 +212,11 @@ trace_of (struct evaluation *ev, const struct node *node, const struct value *qu
     }
     trace.si *= gas->molar_mass / molar_mass;
     trace.measure.ratio = RATIO_MOLE;
+  }
+  if (!(trace.si >= 0 && trace.si <= 1)) {
+    return fault_set_at (ev->fault, MESSAGE_RANGE, node->a->at,
+                         trace.si < 0 ? "a concentration below zero"
+                                      : "a concentration above the whole gas", NULL);
   }
   *out = trace;
   return true;

@@ -2,6 +2,7 @@
 #include "language/evaluation.h"
 
 #include <math.h>
+#include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/session_private.h"
@@ -48,11 +49,27 @@ same_family (struct evaluation *ev, const struct value *a, struct value *b)
   b->measure.family = to;
 }
 
+/* A bare number beside a share is one of the same kind: e - 1, where e is in mol/mol.  */
+static void
+lend_ratio (struct value *a, struct value *b)
+{
+  bool plain = dimension_is_none (a->measure.dimension)
+               && dimension_is_none (b->measure.dimension)
+               && a->measure.sort == UNIT_SCALE && b->measure.sort == UNIT_SCALE;
+  if (plain && a->measure.ratio == RATIO_NONE) {
+    a->measure.ratio = b->measure.ratio;
+    a->unit = b->unit;
+  } else if (plain && b->measure.ratio == RATIO_NONE) {
+    b->measure.ratio = a->measure.ratio;
+  }
+}
+
 static bool
 add_quantities (struct evaluation *ev, const struct node *node, struct value *a, struct value *b)
 {
   bool minus = node->kind == NODE_SUBTRACT;
   same_family (ev, a, b);
+  lend_ratio (a, b);
   if (!measure_equal (a->measure, b->measure)) {
     return wrong (ev, MESSAGE_UNIT_MISMATCH, node->b,
                   "both sides of + and - must measure the same thing");
@@ -85,6 +102,15 @@ add_quantities (struct evaluation *ev, const struct node *node, struct value *a,
   }
   /* A vacuum grows when pressure falls; both are absolute here, so a difference just adds.  */
   a->si = minus ? a->si - b->si : a->si + b->si;
+  if (!a->basis || !b->basis || strcmp (a->basis, b->basis) != 0) {
+    a->basis = NULL;                  /* counted differently: the sum is counted as neither */
+  }
+  if (is_point (a) && a->si < 0) {
+    fault_set_at (ev->fault, MESSAGE_RANGE, node->sign_at,
+                  a->measure.sort == UNIT_POINT ? "a temperature below absolute zero"
+                                                : "an absolute pressure below zero", NULL);
+    return false;
+  }
   return true;
 }
 
@@ -264,6 +290,9 @@ multiply_quantities (struct evaluation *ev, const struct node *node, struct valu
     return wrong (ev, MESSAGE_UNIT_MISMATCH, node->b,
                   "volumes at different reference conditions cannot be multiplied");
   }
+  if (divide && fpclassify (b->si) == FP_ZERO) {
+    return wrong (ev, MESSAGE_RANGE, node->b, "nothing can be divided by zero");
+  }
   a->si = divide ? a->si / b->si : a->si * b->si;
   if (b_plain) {
     return true;
@@ -271,10 +300,13 @@ multiply_quantities (struct evaluation *ev, const struct node *node, struct valu
   if (a_plain && !divide) {
     a->unit = b->unit;
     a->words = b->words;
+    a->basis = b->basis;
+    a->moisture = b->moisture;
     *m = b->measure;
     return true;
   }
   a->unit = NULL;
+  a->basis = a->moisture = NULL;
   m->dimension = divide ? dimension_over (m->dimension, b->measure.dimension)
                         : dimension_times (m->dimension, b->measure.dimension);
   m->family = m->family_power != 0 ? m->family : b->measure.family;
@@ -290,7 +322,7 @@ static bool
 divide_likes (struct evaluation *ev, const struct node *node, struct value *a,
               const struct value *b)
 {
-  double top[2], bottom[2];
+  double top[2] = { 0, 0 }, bottom[2] = { 0, 0 };
   const struct value *v[2] = { a, b };
   double *to[2] = { top, bottom };
   bool flow[2];
@@ -324,7 +356,7 @@ multiply (struct evaluation *ev, const struct node *node, struct value *a, struc
 {
   bool divide = node->kind == NODE_DIVIDE;
   double by;
-  if (divide && is_number (b) && fabs (number_of (b)) < 1e-300) {
+  if (divide && is_number (b) && fpclassify (number_of (b)) == FP_ZERO) {
     return wrong (ev, MESSAGE_RANGE, node->b, "nothing can be divided by zero");
   }
   if (divide && has_flow (a) && has_flow (b)) {
@@ -380,7 +412,9 @@ function (struct evaluation *ev, const struct node *node, struct value *out)
   }
   double x = number_of (&v);
   if ((node->kind == NODE_SQRT && x < 0) || (node->kind == NODE_LN && x <= 0)) {
-    return wrong (ev, MESSAGE_RANGE, node->a, "there is no such root or logarithm");
+    return wrong (ev, MESSAGE_RANGE, node->a,
+                  node->kind == NODE_SQRT ? "there is no square root of a figure below zero"
+                                          : "a logarithm is that of a figure above zero");
   }
   *out = value_number (node->kind == NODE_SQRT ? sqrt (x) : node->kind == NODE_LN ? log (x)
                                                                                  : exp (x));
@@ -401,6 +435,7 @@ offer_unit (struct evaluation *ev, const struct node *node)
     return;
   }
   const char *joined = arena_format (ev->arena, "%s/%s", node->a->unit_text, right->text);
+  ev->fault->fact[1] = NULL;            /* no name was meant: none is offered */
   fault_hint (ev->fault, "did you mean '%s %s'? no blanks inside a unit", node->a->figure, joined);
 }
 

@@ -37,7 +37,9 @@ flow_is_specific (const struct measure *m)
 {
   bool flow;
   struct dimension d = m->dimension;
-  return flow_basis_of (m, &flow) == FLOW_NONE
+  bool pressure = dimension_equal (d, DIMENSION_PRESSURE)
+                  && (m->sort == UNIT_ABSOLUTE || m->sort == UNIT_GAUGE || m->sort == UNIT_VACUUM);
+  return flow_basis_of (m, &flow) == FLOW_NONE && !pressure
          && (m->family_power == -1 || dimension_equal (dimension_times (d, DIMENSION_MASS),
                                                        DIMENSION_ENERGY)
              || dimension_equal (dimension_times (d, DIMENSION_AMOUNT), DIMENSION_ENERGY)

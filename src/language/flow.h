@@ -21,7 +21,8 @@ struct flow_figure {
   const struct state *state;
   const struct stream *source;
 };
-/* AT: where the gas is named.  Kinds: state-missing, gross-or-net, unit-mismatch, not-available.  */
+/* AT is where the gas is named.
+   Kinds: state-missing, gross-or-net, unit-mismatch, not-available.  */
 bool flow_from_quantity (struct evaluation *, const struct flow_figure *, struct place at,
                          struct stream *) MUST_CHECK;
 

@@ -128,9 +128,31 @@ missing_blanks (struct evaluation *ev, const char *name)
   return NULL;
 }
 
+/* A name of the tables where one of the user's, or one of another kind, is needed.  */
+static bool
+is_of_tables (struct evaluation *ev, const struct node *node)
+{
+  const char *name = node->text, *of = NULL;
+  if (known (ev->session, name, strlen (name)) && !name_find (ev->session, name, strlen (name))) {
+    of = "component";
+  }
+  for (size_t i = 0; !of && i < reference_table_size (ev->session->references); i++)
+    if (strcmp (reference_table_at (ev->session->references, i)->name, name) == 0) {
+      of = "name of reference conditions (at ...)";
+    }
+  if (of) {
+    fault_set_at (ev->fault, MESSAGE_KIND_WRONG, node->at,
+                  arena_format (ev->arena, "'%s' is a %s and cannot stand here", name, of), NULL);
+  }
+  return of != NULL;
+}
+
 bool
 name_unknown (struct evaluation *ev, const struct node *node)
 {
+  if (is_of_tables (ev, node)) {
+    return false;
+  }
   const char *spaced = missing_blanks (ev, node->text);
   const char *near = spaced ? spaced : nearest_name (ev->session, node->text);
   return fault_set_at (ev->fault, MESSAGE_NAME_UNKNOWN, node->at, node->text,

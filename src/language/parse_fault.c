@@ -40,13 +40,23 @@ offer_figure (struct parser *p)
                 typed, comma + 1);
 }
 
+/* A character that cannot stand there, by its number if nobody could see it.  */
+static const char *
+character_text (const struct parser *p, const struct token *t)
+{
+  unsigned code;
+  size_t n = t->end - t->start;
+  return scan_is_unseen (p->scan.text + t->start, n, &code)
+         ? arena_format (p->arena, "U+%04X", code) : token_text (p, t);
+}
+
 /* What is wrong with the token by itself, wherever it stands.  */
 static bool
 fail_bad_token (struct parser *p)
 {
   const struct token *t = &p->token;
   bool of_character = t->wrong == MESSAGE_CHARACTER;
-  fail (p, t->wrong, t->at, of_character ? token_text (p, t) : NULL,
+  fail (p, t->wrong, t->at, of_character ? character_text (p, t) : NULL,
         of_character ? t->hint : NULL);
   if (t->hint != NULL && !of_character)
     fault_hint (p->fault, "%s", t->hint);

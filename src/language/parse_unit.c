@@ -144,10 +144,11 @@ check_half_blanks (struct parser *p, const struct unit_read *read, size_t start)
   if (next.kind != TOKEN_WORD || t->blank == next.blank)
     return true;
   const char *text = bytes_text (p, start, next.end);
-  fail (p, MESSAGE_UNIT_FORM, t->at, text, "no blanks inside a unit");
   const char *closed = arena_format (p->arena, "%s%.*s%s", read->text, (int) (t->end - t->start),
                                      p->scan.text + t->start, token_text (p, &next));
-  if (text_is_unit (p, closed))
+  bool offered = text_is_unit (p, closed);
+  fail (p, MESSAGE_UNIT_FORM, t->at, text, offered ? NULL : "no blanks inside a unit");
+  if (offered)
     fault_hint (p->fault, "no blanks inside a unit: did you mean '%s'?", closed);
   return false;
 }

@@ -8,6 +8,7 @@
 enum {
   NO_BREAK_SPACE = 0xA0, DEGREE = 0xB0, PLUS_MINUS = 0xB1, SUPERSCRIPT_2 = 0xB2,
   SUPERSCRIPT_3 = 0xB3, MICRO = 0xB5, MIDDLE_DOT = 0xB7, SUPERSCRIPT_1 = 0xB9, TIMES_SIGN = 0xD7,
+  DIVISION_SIGN = 0xF7,
   GREEK_MU = 0x3BC, THIN_SPACE = 0x2009, NARROW_NO_BREAK_SPACE = 0x202F, EN_DASH = 0x2013,
   LEFT_QUOTE = 0x201C, RIGHT_QUOTE = 0x201D, SUPERSCRIPT_0 = 0x2070, SUPERSCRIPT_4 = 0x2074,
   SUPERSCRIPT_MINUS = 0x207B, SUBSCRIPT_0 = 0x2080, SUBSCRIPT_9 = 0x2089, DEGREE_C = 0x2103,
@@ -200,6 +201,12 @@ scan_number (struct scanner *s, struct token *t)
       break;
   }
   scan_exponent (s);
+  if (byte_at (s, s->offset) == '.' && byte_is_digit (byte_at (s, s->offset + 1))) {
+    while (byte_at (s, s->offset) == '.' || byte_is_digit (byte_at (s, s->offset)))
+      s->offset++;
+    bad (t, MESSAGE_NUMBER_FORM, "an exponent is a whole number: 1e5");
+    return;
+  }
   if (grouped_wrong)
     bad (t, MESSAGE_NUMBER_FORM, "_ stands between digits: 1_000");
   else if (points > 1)
@@ -208,33 +215,20 @@ scan_number (struct scanner *s, struct token *t)
     scan_foreign_number (s, t);
 }
 
-/* A text in quotes; it ends in its line.  */
-static void
-scan_text (struct scanner *s, struct token *t)
+/* Steers a terminal, turns the direction of writing, or has no width.  */
+static bool
+is_unseen (unsigned code)
 {
-  t->kind = TOKEN_TEXT;
-  s->offset++;
-  for (;;) {
-    char c = byte_at (s, s->offset);
-    if (s->offset >= s->n || c == '\n') {
-      bad (t, MESSAGE_TEXT_OPEN, NULL);
-      return;
-    }
-    size_t length = 1;
-    if ((unsigned char) c >= 0x80)
-      character_at (s, s->offset, &length);
-    pass (s, length);
-    if (c == '"')
-      return;
-  }
+  return code < 0x20 || (code >= 0x7F && code < 0xA0) || code == 0xAD || code == 0x3000
+         || (code >= 0x200B && code <= 0x200F) || (code >= 0x2028 && code <= 0x202E)
+         || (code >= 0x2060 && code <= 0x206F) || code == 0xFEFF;
 }
 
-/* One sign of LENGTH bytes.  */
-static void
-sign (struct scanner *s, struct token *t, enum token_kind kind, size_t length)
+bool
+scan_is_unseen (const char *text, size_t n, unsigned *code)
 {
-  t->kind = kind;
-  s->offset += length;
+  *code = 0;
+  return utf8_decode (text, n, code) == n && is_unseen (*code);
 }
 
 static const char *
@@ -253,8 +247,51 @@ hint_for_character (unsigned code)
   case EN_DASH: return "write -";
   case LEFT_QUOTE: case RIGHT_QUOTE: return "write \"";
   case RIGHT_ARROW: return "write 'in'";
-  default: return code >= 0xAA ? "letters outside a-z stand in double quotes" : NULL;
+  case DIVISION_SIGN: return "write /";
+  default: break;
   }
+  if (is_unseen (code))
+    return "a sign that is not seen: delete it";
+  /* U+2000 to U+2BFF hold punctuation, signs of money and of calculation.  */
+  return code >= 0xAA && (code < 0x2000 || code >= 0x2C00)
+         ? "letters outside a-z stand in double quotes" : NULL;
+}
+
+/* A text in quotes; it ends in its line.  */
+static void
+scan_text (struct scanner *s, struct token *t)
+{
+  t->kind = TOKEN_TEXT;
+  s->offset++;
+  for (;;) {
+    char c = byte_at (s, s->offset);
+    if (s->offset >= s->n || c == '\n') {
+      bad (t, MESSAGE_TEXT_OPEN, NULL);
+      return;
+    }
+    size_t length = 1;
+    unsigned code = (unsigned char) c;
+    if (code >= 0x80)
+      code = character_at (s, s->offset, &length);
+    if (is_unseen (code) && c != '\t') {
+      t->start = s->offset;
+      t->at.first = column_of (s);
+      pass (s, length);
+      bad (t, MESSAGE_CHARACTER, hint_for_character (code));
+      return;
+    }
+    pass (s, length);
+    if (c == '"')
+      return;
+  }
+}
+
+/* One sign of LENGTH bytes.  */
+static void
+sign (struct scanner *s, struct token *t, enum token_kind kind, size_t length)
+{
+  t->kind = kind;
+  s->offset += length;
 }
 
 /* A character outside ASCII.  */

@@ -46,6 +46,8 @@ void scan_next (struct scanner *, struct token *);
 /* Reads the bytes from START's on as a unit (the longest run that may be one) into *UNIT, of
    kind TOKEN_WORD, and goes on behind it.                                                       */
 void scan_unit (struct scanner *, const struct token *start, struct token *unit);
+/* Are the N bytes at TEXT one character that nobody would see?  *CODE: which.  */
+bool scan_is_unseen (const char *text, size_t n, unsigned *code) MUST_CHECK;
 
 /* Is the byte a letter from a to z or A to Z; a digit?  */
 static inline bool

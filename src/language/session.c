@@ -3,6 +3,7 @@
 
 #include <stdlib.h>
 #include <string.h>
+#include <sys/stat.h>
 #include "gas/air.h"
 #include "gas/reference.h"
 #include "gas/species.h"
@@ -27,6 +28,10 @@ species_of_key (struct session *s, const char *key)
 static bool
 read_tables (struct session *s, const char *directory, struct fault *fault)
 {
+  struct stat found;
+  if (directory && (stat (directory, &found) != 0 || !S_ISDIR (found.st_mode))) {
+    return fault_set (fault, MESSAGE_FILE, directory, "there is no such folder");
+  }
   s->vocabulary.units = unit_table_create (directory, fault);
   s->vocabulary.species = s->vocabulary.units ? species_table_create (directory, fault) : NULL;
   s->references = s->vocabulary.species

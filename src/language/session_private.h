@@ -154,6 +154,7 @@ struct figure {
   const struct unit *unit;                  /* null: a plain number */
   const char *unit_text;
   const char *moisture, *basis, *label;
+  bool named;                               /* its row needs `what` to be understood */
 };
 struct figures { struct figure *at; size_t count, room; };
 void figures_add (struct evaluation *, struct figures *, const struct figure *);

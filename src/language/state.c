@@ -110,14 +110,18 @@ figure_item (struct evaluation *ev, struct state *state, const struct node *node
     return quantity_pressure (ev, &v, typed, &p) && set_pressure (ev, state, p, node->at);
   }
   if (m->sort == UNIT_HUMIDITY) {
-    if (!(v.si >= 0)) {
-      return fault_set_at (ev->fault, MESSAGE_RANGE, node->at, "a humidity below zero", NULL);
+    if (!(v.si >= 0 && v.si <= 1)) {
+      return fault_set_at (ev->fault, MESSAGE_RANGE, node->at,
+                           "a relative humidity lies between 0 and 100 %", NULL);
     }
     return set_moisture (ev, state, MOISTURE_HUMIDITY, v.si, node->at);
   }
   if (m->sort == UNIT_OXYGEN) {
     if (!isnan (state->oxygen)) {
       return twice (ev, node->at, "reference oxygens");
+    }
+    if (v.si < 0) {
+      return fault_set_at (ev->fault, MESSAGE_RANGE, node->at, "oxygen below zero", NULL);
     }
     state->oxygen = v.si;
     return true;
@@ -303,6 +307,11 @@ state_water (struct evaluation *ev, const struct state *state, double T, double 
     *y = state->moist;
     return true;
   case MOISTURE_DEW_POINT:
+    if (state->moist > T) {
+      return fault_set_at (ev->fault, MESSAGE_RANGE, state->at,
+                           "the dew point lies above the temperature: no gas holds that much water",
+                           NULL);
+    }
     if (!moist_by_dew_point (state->moist, p, y, &psat, &over_ice, NULL, ev->fault)) {
       return false;
     }
@@ -313,6 +322,10 @@ state_water (struct evaluation *ev, const struct state *state, double T, double 
     }
     break;
   case MOISTURE_HUMIDITY:
+    if (state->moist > 1) {
+      return fault_set_at (ev->fault, MESSAGE_RANGE, state->at,
+                           "a humidity above 100 %RH: no gas holds that much water", NULL);
+    }
     if (!moist_by_humidity (state->moist, T, p, y, &psat, NULL, ev->fault)) {
       return false;
     }

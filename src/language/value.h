@@ -66,7 +66,8 @@ struct value {
 
   struct species_set species;              /* PART, TRACE: the one, or the many of a peak */
   const char *part;                        /* PART, TRACE: its name as typed */
-  const char *basis;                       /* of a property, for its row; or null */
+  const char *basis, *moisture;            /* of a property or of a figure that was told in a
+                                              unit, for its row; or null */
   double moles, mass;                      /* PART: mol(/s) and kg(/s), or per mol of gas;
                                               RATIO: by moles and by mass */
   bool flow;                               /* PART of a stream: per second */

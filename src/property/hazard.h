@@ -7,7 +7,8 @@
 struct composition; struct species;
 
 enum hazard_kind {
-  HAZARD_TOXIC,            /* a toxic SPECIES (not a mere asphyxiant) is RATIO times its 8 h exposure limit (>= 1), LIMIT mol/mol */
+  HAZARD_TOXIC,            /* a toxic SPECIES (not a mere asphyxiant) is RATIO times its 8 h
+                              exposure limit (>= 1), LIMIT mol/mol */
   HAZARD_FLAMMABLE,        /* with oxygen present, at or above a quarter of the mixture's lower
                               flammable limit: RATIO of the limit (Le Chatelier, sum x_i/L_i);
                               SPECIES is the largest, LIMIT that of the fuels together */

@@ -26,7 +26,7 @@ report_help (struct text *out, const struct report_style *style, const struct he
     line_add (out, style, "say", e->say);
     line_add (out, style, "get", e->get);
     line_add (out, style, "try", e->example);
-    if (e->next != NULL)
+    if (e->next != NULL && e->next->say != NULL && *e->next->say != '\0')
       text_add_char (out, '\n');
   }
 }

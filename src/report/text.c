@@ -42,13 +42,13 @@ row_name (const struct answer *answer)
   return answer->label != NULL ? answer->label : row_what (answer);
 }
 
-/* Rows are named where they have labels or are about different things.  */
+/* Rows are named where they have labels, need it, or are about different things.  */
 static bool
 rows_are_named (const struct result *result)
 {
   const char *first = row_what (result->answers);
   for (const struct answer *a = result->answers; a != NULL; a = a->next)
-    if (a->label != NULL || strcmp (row_what (a), first) != 0)
+    if (a->label != NULL || a->named || strcmp (row_what (a), first) != 0)
       return true;
   return false;
 }

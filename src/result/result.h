@@ -15,6 +15,7 @@ struct arena; struct workings;
 struct answer {
   const char *what;               /* "raw", "CH4 of raw" */
   const char *label;              /* behind `as`, or null */
+  bool named;                     /* the row would not say what it is of without `what` */
   double value;
   const char *unit;               /* "" for a plain number */
   double uncertainty;             /* standard, in the unit; NAN: none */

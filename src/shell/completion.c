@@ -167,7 +167,8 @@ is_plain (const char *name)
       || is_listed (name, further_words))
     return false;
   for (const char *c = name + 1; *c != '\0'; c++) {
-    const bool joins = (*c == '-' || *c == '+') && (is_letter (c[1]) || (c[1] >= '0' && c[1] <= '9'));
+    const bool joins = (*c == '-' || *c == '+')
+                       && (is_letter (c[1]) || (c[1] >= '0' && c[1] <= '9'));
 
     if (!is_letter (*c) && !(*c >= '0' && *c <= '9') && *c != '_' && !joins
         && !(*c == '+' && c[1] == '\0'))
@@ -195,7 +196,7 @@ offer_own_names (struct search *search)
   session_each_name (search->session, offer_name, search);
 }
 
-/* Without a letter typed the keys alone: with all their names there are too many to look through. */
+/* Without a letter typed the keys alone: with all their names there are too many to read.  */
 static void
 offer_components (struct search *search)
 {

@@ -213,6 +213,6 @@ options_help (struct text *out)
   }
   text_add (out,
             "\n"
-            "Exit status: 0 if all went well; 1 if a statement failed, or a file could not be read\n"
-            "or written; 2 if the command line is wrong.\n");
+            "Exit status: 0 if all went well; 1 if a statement failed, or a file could not be\n"
+            "read or written; 2 if the command line is wrong.\n");
 }

@@ -37,7 +37,8 @@ open_beside (struct outfile *file, mode_t mode)
 
   text_init (&name);
   text_add_bytes (&name, file->target, folder);
-  text_add_format (&name, ".%s.XXXXXX", file->target + folder);
+  text_add_format (&name, ".%s.", file->target + folder);
+  text_add_repeated (&name, 'X', 6);    /* what mkstemp replaces */
   file->fd = mkstemp (name.bytes);
   if (file->fd == -1) {
     const int error = errno;

@@ -22,7 +22,7 @@ bool outfile_keep (struct outfile *) MUST_CHECK;
 /* Takes away what was written.  */
 void outfile_drop (struct outfile *);
 
-/* Is the file NAME the same plain file as INPUT, however both are spelt ("-" is standard input)?  */
+/* Is the file NAME the same plain file as INPUT, however spelt ("-" is standard input)?  */
 bool outfile_is_input (const char *name, const char *input);
 
 #endif

@@ -92,6 +92,8 @@ output_result (struct output *output, const struct result *result, bool paged)
     return;
   if (paged && output->prompt)
     output_flush (output);
+  if (output->headed && !output->prompt && output->format == REPORT_TEXT)
+    text_add_char (&output->pending, '\n');     /* answers of two statements stand apart */
   report_result (&output->pending, output->format, &output->style, result, !output->headed);
   output->headed = true;
   if (output->prompt && output->format == REPORT_TEXT) {

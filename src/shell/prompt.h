@@ -6,7 +6,7 @@
 
 struct script;
 
-/* Runs the user's file of own settings, unless there is none or WITHOUT_INIT, then what is typed.  */
+/* Runs the user's file of settings, unless there is none or WITHOUT_INIT, then what is typed.  */
 void prompt_run (struct script *, bool without_init);
 
 #endif

@@ -112,7 +112,7 @@ may_go_on (const struct script *script, const struct parser *parser)
   return script->keep_going && parser_block (parser) == session_block (script->session);
 }
 
-/* Is the run being stopped by a signal?  At the prompt that is told, elsewhere the program ends.  */
+/* Is a signal stopping the run?  At the prompt that is told, elsewhere the program ends.  */
 static bool
 is_stopped (const struct script_line *line)
 {

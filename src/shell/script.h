@@ -30,7 +30,7 @@ struct script_line {
   size_t n;
   int first;                            /* number of its first physical line */
   const char *file;                     /* null: typed at the prompt */
-  bool out_of_sight;                    /* typed, but it does not stand just above what is printed */
+  bool out_of_sight;                    /* typed, but not just above what is printed */
   size_t columns;                       /* of the screen it was typed on */
 };
 

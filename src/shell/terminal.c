@@ -49,12 +49,17 @@ struct terminal {
 /* The library calls its functions without anything of ours.  */
 static struct terminal *current;
 
-/* What a read gives while the line is being given up.  '\n' ends an ordinary line.  Where the
-   library asks again, because it waits for an answer or for the end of a paste, the next two get it
-   out of there.                                                                                  */
+/* What a read gives while the line is being given up.  '\n' ends an ordinary line; where the
+   library asks again, because it waits for the end of a paste, the next two get it out of there.
+   A question of completion must be broken off at once: the library has already given back what it
+   lists.                                                                                        */
 static int
 key_of_interrupt (void)
 {
+  if (RL_ISSTATE (RL_STATE_COMPLETING)) {
+    rl_readline_state &= ~(unsigned long) RL_STATE_COMPLETING;
+    return '\a';
+  }
   switch (current->asked_since_interrupt++) {
     case 0:
       rl_replace_line ("", 0);

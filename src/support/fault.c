@@ -4,6 +4,7 @@
 #include <assert.h>
 #include <stdarg.h>
 #include <stddef.h>
+#include <string.h>
 #include "support/arena.h"
 #include "support/text.h"
 
@@ -13,10 +14,19 @@ fault_init (struct fault *fault, struct arena *arena)
   *fault = (struct fault) { .kind = MESSAGE_NONE, .arena = arena };
 }
 
+enum { LONGEST_FACT = 1000 };     /* bytes; of a longer one (a line of 1 MB) the head is told */
+
 static const char *
 kept (const struct fault *fault, const char *fact)
 {
-  return fact != NULL ? arena_string (fault->arena, fact) : NULL;
+  if (fact == NULL)
+    return NULL;
+  size_t n = strlen (fact);
+  if (n <= LONGEST_FACT)
+    return arena_copy (fault->arena, fact, n);
+  for (n = LONGEST_FACT; n > 0 && ((unsigned char) fact[n] & 0xC0) == 0x80; n--)
+    continue;
+  return arena_format (fault->arena, "%.*s...", (int) n, fact);
 }
 
 bool

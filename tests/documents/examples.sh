@@ -116,6 +116,15 @@ tell "$(LC_ALL=C.UTF-8 "$GASWRIGHT" morning.gw > morning.out 2> morning.err || e
 tell "$("$GASWRIGHT" --format json morning.gw > morning.json || echo "exit status $?"
   [ -s morning.json ] || echo "nothing printed")" "the morning runs in JSON"
 
+if command -v python3 > out 2>&1; then
+  tell "$(PYTHONDONTWRITEBYTECODE=1 python3 "$here/morning.py" "$top" morning.json > said 2>&1 ||
+    { echo "it failed"; grep -v '^ok' said; }
+  grep -q '^ok' said || echo "nothing compared")" \
+    "the morning's figures are those worked out apart from the program"
+else
+  skip "no python3" "the morning's figures are those worked out apart from the program"
+fi
+
 # ---- DEVELOPERS.md ----
 
 tell "$(while read -r layer; do

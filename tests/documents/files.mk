@@ -2,6 +2,7 @@
 EXTRA_DIST += \
   %D%/examples.sh \
   %D%/morning.golden \
+  %D%/morning.py \
   %D%/preamble.gw \
   %D%/renew.sh \
   %D%/replay.awk

@@ -129,7 +129,7 @@ def with_probes(entries):
     """ENTRIES with a look at the definitions before and behind each line that fails."""
     every = []
     for entry in entries:
-        if entry.faults:
+        if entry.faults and not (every and every[-1].probe):
             every.append(Entry(PROBE, 0, entry.number, True))
         every.append(entry)
         if entry.faults:
@@ -157,8 +157,10 @@ def deal_out(every, out):
             thing["error"]["line"] += every[at].first - starts[at]
         else:
             statement = squeezed(thing["statement"].encode())
+            # A look at the definitions answers twice: list and set.
             places = [i for i in range(at, len(every))
-                      if statement in squeezed(every[i].text)]
+                      if statement in squeezed(every[i].text)
+                      and not (every[i].probe and len(every[i].objects) == 2)]
             if not places:
                 lost.append(text)
                 continue
@@ -207,11 +209,10 @@ def look_at_figures(entry):
 
 def look_at_probes(every):
     """What lines that failed have changed."""
-    probes = [entry for entry in every if entry.probe]
     wrong = []
-    for before, behind in zip(probes[::2], probes[1::2]):
-        if not before.objects or before.objects != behind.objects:
-            wrong.append("entry %d changed what list and set say" % (before.number + 1))
+    for before, entry, behind in zip(every, every[1:], every[2:]):
+        if entry.faults and (len(before.objects) != 2 or before.objects != behind.objects):
+            wrong.append("entry %d changed what list and set say" % (entry.number + 1))
     return wrong
 
 
@@ -275,7 +276,8 @@ def look_at_text(sessions):
         if bad:
             wrong.append("%s holds %r" % (name, text[max(0, bad.start() - 40):bad.end()]))
         wrong += ["%s holds %s" % (name, word) for word in re.findall(
-            r"\b-?(?:nan|inf)\b|\(null\)|AddressSanitizer|runtime error", text)]
+            r"\b-?(?:nan|inf)\b|\(null\)|AddressSanitizer|runtime error", text)
+                  if word.encode() not in typed]
     return wrong
 
 
@@ -310,4 +312,5 @@ def main():
     return tap.finish()
 
 
-sys.exit(main())
+if __name__ == "__main__":
+    sys.exit(main())

@@ -5,7 +5,7 @@ import sys
 
 import session
 
-TABLES = ("conversions", "compositions", "densities")
+TABLES = ("conversions", "compositions", "densities", "uncertainties")
 
 
 def setting(row):
@@ -29,6 +29,9 @@ def look(rows, options):
         wrong = session.off(answer["value"], float(row["value"]), float(row["tol"]))
         if not wrong and answer["unit"] != row["unit"]:
             wrong = "in %s, not in %s" % (answer["unit"], row["unit"])
+        if not wrong and "uncertainty" in row:
+            wrong = session.off(answer.get("uncertainty"), float(row["uncertainty"]),
+                                float(row["utol"]))
         yield row, [row["statement"], wrong] if wrong else []
 
 

@@ -122,8 +122,8 @@ def flows(gases):
 def concentrations(gases):
     group = Group("concentrations")
     for _ in range(300):
-        trace, at, figure = deal.choice(TRACES), state(), between(0.001, 5000)
-        here = deal.choice(("ppm", "ppb", "vol%", "mol%"))
+        trace, at, here = deal.choice(TRACES), state(), deal.choice(("ppm", "ppb", "vol%", "mol%"))
+        figure = between(0.001, 50 if "%" in here else 5000)
         there = deal.choice(("mg/m3", "ug/m3", "g/m3", "mg/Nm3", "mg/Sm3", "gr/100scf", "mol/m3"))
         held = " at " + at if there in ("mg/m3", "ug/m3", "g/m3", "mol/m3") else ""
         group.trips.append(Trip(figure, "%s %s of %s in %s%s" % (figure, here, trace, there, held),
@@ -132,6 +132,19 @@ def concentrations(gases):
         trace, gas, figure = deal.choice(TRACES), deal.choice(gases), between(0.001, 5000)
         group.trips.append(Trip(figure, "%s ppm of %s within %s in ppmw" % (figure, trace, gas),
                                 "FIGURE ppmw of %s within %s in ppm" % (trace, gas)))
+    return group
+
+
+def kept(gases):
+    """A figure told in a unit and kept in a let counts as it did: real, dry, at its reference."""
+    group = Group("figures kept in a let")
+    for number in range(120):
+        moist = number % 2 == 1
+        gas, units, at = deal.choice(gases), WET if moist else FLOWS, state(moist)
+        figure, (here, there) = between(0.01, 1e5), deal.sample(units, 2)
+        flow = "%s %s of %s at %s in " % (figure, here, gas, at)
+        group.before.append("let f%d = %s%s" % (number, flow, there))
+        group.equal.append((flow + here, "f%d of %s at %s in %s" % (number, gas, at, here)))
     return group
 
 
@@ -345,8 +358,8 @@ def main():
     made = [gas_parts() for _ in range(60)]
     gases = ["g%d" % i for i in range(len(made))]
     definitions = ["gas %s = %s" % (gas, gas_list(parts)) for gas, parts in zip(gases, made)]
-    trips(tap, flows(gases) + [concentrations(gases), humidities(gases), plain_units(), same_in_any_order(made)],
-          definitions)
+    trips(tap, flows(gases) + [concentrations(gases), kept(gases), humidities(gases),
+                               plain_units(), same_in_any_order(made)], definitions)
     compositions(tap, gases, definitions)
     apart(tap, Parts(list(zip(gases, made)), 40), definitions)
     return tap.finish()

@@ -3,6 +3,7 @@ import json
 import math
 import os
 import subprocess
+import sys
 
 TOP = os.path.dirname(os.path.dirname(os.path.dirname(os.path.abspath(__file__))))
 
@@ -20,6 +21,9 @@ def run(statements, form="json", options=(), locale=None):
     done = subprocess.run([program(), "--format", form, "--keep-going", *options],
                           input=statements.encode(), stdout=subprocess.PIPE,
                           stderr=subprocess.PIPE, env=environment, check=False)
+    if done.returncode not in (0, 1):
+        print("Bail out! gaswright ended with %d: %s" % (done.returncode, done.stderr.decode()))
+        sys.exit(99)
     return done.returncode, done.stdout.decode(), done.stderr.decode()
 
 

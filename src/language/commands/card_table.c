@@ -77,7 +77,9 @@ card_of_species (struct session *session, const struct species *s, struct result
     card_add_line (result, card, s->note);
   }
   if (s->source && *s->source) {
-    card_add_line (result, card, arena_format (arena, "source: %s", s->source));
+    card_add_line (result, card, arena_format (arena, "source: %s%s", s->source,
+                                               s->origin == SPECIES_USERS ? " (your own table)"
+                                                                          : ""));
   }
 }
 
@@ -106,10 +108,20 @@ sort_text (const struct unit *unit)
   return name ? name : "compound unit";
 }
 
-/* The SI unit a factor leads to, in base units.  */
+/* The SI unit a factor leads to: by its own word, else in base units.  */
 static const char *
 si_text (struct arena *arena, struct dimension d)
 {
+  const struct { struct dimension dimension; const char *text; } words[] = {
+    { DIMENSION_PRESSURE, "Pa" }, { DIMENSION_ENERGY, "J" }, { DIMENSION_POWER, "W" },
+    { DIMENSION_VOLUME, "m3" }, { DIMENSION_VOLUME_FLOW, "m3/s" },
+    { DIMENSION_MASS_FLOW, "kg/s" }, { DIMENSION_MOLAR_FLOW, "mol/s" },
+    { DIMENSION_DENSITY, "kg/m3" }, { DIMENSION_MOLAR_DENSITY, "mol/m3" } };
+  for (size_t i = 0; i < sizeof words / sizeof words[0]; i++)
+    if (dimension_equal (words[i].dimension, d)) {
+      return words[i].text;
+    }
+
   static const char *const symbols[] = { "kg", "m", "s", "K", "mol" };
   const signed char powers[] = { d.mass, d.length, d.time, d.temperature, d.amount };
   const char *text = "";

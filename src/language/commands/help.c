@@ -27,13 +27,19 @@ is_first (size_t i)
 static void
 overview (struct result *result)
 {
+  enum { LINE = 66 };
   struct help_page *page = result_help (result, "help");
   const char *names = "";
+  help_add (result, page, "help TOPIC", "a page for each topic", "help gas");
   for (size_t i = 0; i < TOPIC_COUNT; i++)
     if (is_first (i)) {
+      if (strlen (names) + strlen (topics[i].name) > LINE) {
+        help_add (result, page, "", names, "");
+        names = "";
+      }
       names = arena_format (result->arena, "%s%s%s", names, *names ? ", " : "", topics[i].name);
     }
-  help_add (result, page, "help TOPIC", names, "help gas");
+  help_add (result, page, "", names, "");
 }
 
 static const char *

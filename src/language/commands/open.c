@@ -75,6 +75,11 @@ run_lines (struct session *session, const struct statement *s, const struct text
   fault_init (&inside, fault->arena);
   text_init (&line);
   while (done && reader_next (&reader, &line, &first)) {
+    bool (*interrupted) (void) = session->options.interrupted;
+    if (interrupted && interrupted ()) {
+      done = fault_set_at (&inside, MESSAGE_INTERRUPTED, s->at, NULL, NULL);
+      break;
+    }
     /* The parser borrows the line: it must outlive this loop's buffer.  */
     struct text copy = { arena_copy (result->arena, line.bytes, line.length), line.length, 0 };
     done = run_line (session, &copy, first, result, &inside);
@@ -88,6 +93,9 @@ command_open (struct session *session, const struct statement *s, struct result 
               struct fault *fault)
 {
   struct text text;
+  if (!*s->text) {
+    return fault_set_at (fault, MESSAGE_TEXT_EXPECTED, s->text_at, "a file has a name", NULL);
+  }
   if (session->groups_open >= OPEN_DEEPEST) {
     return fault_set_at (fault, MESSAGE_FILE, s->text_at, s->text,
                          "files that open each other, too deep");

@@ -93,6 +93,9 @@ command_save (struct session *session, const struct statement *s, struct result 
               struct fault *fault)
 {
   struct text text;
+  if (!*s->text) {
+    return fault_set_at (fault, MESSAGE_TEXT_EXPECTED, s->text_at, "a file has a name", NULL);
+  }
   text_init (&text);
   text_add (&text, "# gaswright\n");
   session_write (session, &text);

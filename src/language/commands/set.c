@@ -65,7 +65,7 @@ set_words (const struct statement *s, struct settings *new, struct fault *fault)
       }
     *is_set = new->model != GAS_MODEL_AUTO;
     return new->model == GAS_MODEL_AUTO || gas_model_equation (new->model)
-           || fault_set_at (fault, MESSAGE_MODEL_ABSENT, s->at, word, NULL);
+           || fault_set_at (fault, MESSAGE_MODEL_ABSENT, s->setting_at, word, NULL);
   case SETTING_REFERENCE_VOLUMES:
     new->real_volumes = strcmp (word, "real") == 0;
     *is_set = new->real_volumes;
@@ -76,7 +76,8 @@ set_words (const struct statement *s, struct settings *new, struct fault *fault)
     *is_set = true;
     return true;
   case SETTING_CALORIFIC_VALUES:
-    return fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->at, "calorific values", NULL);
+    return fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->setting_at, "calorific values",
+                         NULL);
   case SETTING_SITE_PRESSURE:
   case SETTING_SITE_ALTITUDE:
   case SETTING_OXYGEN_IN_AIR:
@@ -95,6 +96,9 @@ out_of_range (const struct statement *s, struct fault *fault, const char *why)
   return fault_set_at (fault, MESSAGE_SETTING_VALUE, s->value->at, names[s->setting], why);
 }
 
+/* No weather and no mine goes so far; a figure above is some other pressure.  */
+static const double BAROMETER_MOST = 2e5;
+
 static bool
 set_barometer (const struct statement *s, double si, struct settings *new, struct fault *fault)
 {
@@ -104,8 +108,8 @@ set_barometer (const struct statement *s, double si, struct settings *new, struc
     fault_place (fault, s->value->at);
     return false;
   }
-  if (!(pressure > 0)) {
-    return out_of_range (s, fault, "a barometer is above zero");
+  if (!(pressure > 0 && pressure <= BAROMETER_MOST)) {
+    return out_of_range (s, fault, "a barometer lies between 0 and 2 bar");
   }
   new->site_pressure = pressure;
   new->site_pressure_spread = altitude ? NULL : s->value->spread;
@@ -143,7 +147,8 @@ set_figure (struct session *session, const struct statement *s, struct settings 
     new->digits = (int) v.si;
     return true;
   case SETTING_COMBUSTION:
-    return fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->at, "calorific values", NULL);
+    return fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->setting_at, "calorific values",
+                         NULL);
   case SETTING_GAS_MODEL:
   case SETTING_REFERENCE_VOLUMES:
   case SETTING_BELOW_DETECTION:

@@ -46,6 +46,13 @@ unknown (struct session *session, const struct statement *s, struct fault *fault
 {
   struct evaluation ev;
   struct node name = { .kind = NODE_NAME, .text = s->name, .at = s->name_at };
+  /* A word with two meanings, cfm or ton, says so itself.  */
+  struct fault open;
+  fault_init (&open, fault->arena);
+  if (!unit_find (session->vocabulary.units, s->name, strlen (s->name), &open)
+      && open.kind == MESSAGE_UNIT_OPEN) {
+    return fault_set_at (fault, MESSAGE_UNIT_OPEN, s->name_at, open.fact[0], open.fact[1]);
+  }
   evaluation_init (&ev, session, NULL, fault);
   return name_unknown (&ev, &name);
 }

@@ -17,7 +17,8 @@
    and Nonlinear Equations (1983), algorithms A5.4.1 and A6.3.1).  Quantities stay above or at
    zero: a step that would take one below is cut short.                                          */
 enum { TRIM_STEPS = 60, TRIM_HALVINGS = 30 };
-#define TRIM_CLOSE 1e-12            /* relative miss of an aim that counts as met */
+#define TRIM_CLOSE 1e-15            /* relative miss of an aim where no step is taken any more */
+#define TRIM_ROUNDED 1e-11          /* miss that rounding to twelve digits may leave */
 #define TRIM_ROUNDING 1e-10         /* what is left where rounding ends the steps */
 #define TRIM_DIFFERENCE 1e-6        /* relative step of the finite differences */
 
@@ -228,6 +229,22 @@ unreachable (struct trim *t, struct fault *fault)
   return false;
 }
 
+/* The quantities to twelve digits, if the aims are met as well so: 900, not 899.9999999999938.  */
+static void
+drop_last_digits (struct trim *t, double r[])
+{
+  double *x = ARENA_ARRAY (t->arena, t->count, double), worst;
+  struct fault fault;
+  fault_init (&fault, t->arena);
+  for (size_t k = 0; k < t->count; k++) {
+    double unit = fabs (t->x[k]) > 0 ? pow (10, floor (log10 (fabs (t->x[k]))) - 11) : 1;
+    x[k] = unit < 1 ? round (t->x[k] / unit) / (1 / unit) : round (t->x[k] / unit) * unit;
+  }
+  if (misses (t, x, r, &worst, &fault) && worst <= TRIM_ROUNDED) {
+    memcpy (t->x, x, t->count * sizeof *x);
+  }
+}
+
 static bool
 search (struct trim *t, struct fault *fault)
 {
@@ -253,7 +270,11 @@ search (struct trim *t, struct fault *fault)
       break;
     }
   }
-  return worst <= TRIM_ROUNDING || unreachable (t, fault);
+  if (worst > TRIM_ROUNDING) {
+    return unreachable (t, fault);
+  }
+  drop_last_digits (t, r);
+  return true;
 }
 
 /* ---- Keeping the outcome ---- */

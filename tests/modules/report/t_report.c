@@ -120,9 +120,11 @@ fault_words (void)
   fault_init (&fault, arena);
   fault_set (&fault, MESSAGE_STATE_MISSING, "this", "5 m3 of N2 at 20 degC, 1 bar(a)");
   says (&fault, typed,
-        (const char *const[]) { "the state is missing: this needs a temperature and a pressure", NULL, "5 m3 of N2 at 20 degC, 1 bar(a)" });
+        (const char *const[]) { "the state is missing: this needs a temperature and a pressure",
+                                NULL, "5 m3 of N2 at 20 degC, 1 bar(a)" });
   says (&fault, NULL,
-        (const char *const[]) { "the state is missing: this needs a temperature and a pressure", "5 m3 of N2 at 20 degC, 1 bar(a)", NULL });
+        (const char *const[]) { "the state is missing: this needs a temperature and a pressure",
+                                "5 m3 of N2 at 20 degC, 1 bar(a)", NULL });
   arena_destroy (arena);
 }
 
