@@ -153,9 +153,9 @@ aga8_covers (const struct composition *composition, const char **lacking)
 }
 
 static double
-aga8_left_out (const struct composition *composition)
+aga8_lumped (const struct composition *composition)
 {
-  return cover_left_out (&aga8_table.cover, composition);
+  return cover_lumped (&aga8_table.cover, composition);
 }
 
 static size_t
@@ -192,7 +192,7 @@ const struct equation equation_aga8_detail = {
   .source = "AGA Report No. 8, Part 1 (2017); ISO 20765-1",
   .gas_constant = 8.31451,
   .covers = aga8_covers,
-  .left_out = aga8_left_out,
+  .lumped = aga8_lumped,
   .range = aga8_range,
   .uncertainty = aga8_uncertainty,
   .mixture_size = aga8_mixture_size,

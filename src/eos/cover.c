@@ -1,11 +1,14 @@
 #include "config.h"
 #include "eos/cover.h"
 
+#include <math.h>
 #include <string.h>
 
 #include "eos/eos.h"
+#include "eos/gerg_table.h"
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "units/constants.h"
 
 /* Keys are compared as they lie in memory, eight bytes at once.  */
 int
@@ -26,8 +29,37 @@ cover_find (const struct cover *cover, const char *key)
   return -1;
 }
 
+/* Tc Vc of a species.  Without Vc it is taken as 0.27 R Tc/pc, the usual critical compression
+   factor (common practice, no source).                                                          */
+static double
+attraction_of (const struct species *s)
+{
+  const double Tc = s->critical_temperature, Vc = s->critical_molar_volume;
+
+  return isfinite (Vc) && Vc > 0 ? Tc * Vc : Tc * (0.27 * GAS_CONSTANT * Tc / s->critical_pressure);
+}
+
+int
+cover_nearest (const struct cover *cover, const struct species *s)
+{
+  const double wanted = attraction_of (s);
+  double least = HUGE_VAL;
+  const char *nearest = NULL;
+
+  for (int i = 0; i < GERG_COUNT && isfinite (wanted) && wanted > 0; i++) {
+    const struct gerg_component *c = &gerg_table.components[i];
+    const double away = fabs (log (wanted * c->rho_c / c->T_c));
+
+    if (away < least && strcmp (c->key, "H2O") != 0) {
+      least = away;
+      nearest = c->key;
+    }
+  }
+  return nearest != NULL ? cover_find (cover, nearest) : -1;
+}
+
 double
-cover_left_out (const struct cover *cover, const struct composition *composition)
+cover_lumped (const struct cover *cover, const struct composition *composition)
 {
   double sum = 0;
 
@@ -49,7 +81,7 @@ cover_all (const struct cover *cover, const struct composition *composition,
       *lacking = composition->species[i]->key;
     }
   }
-  return *lacking == NULL || cover_left_out (cover, composition) < EOS_TRACES;
+  return *lacking == NULL || cover_lumped (cover, composition) < EOS_TRACES;
 }
 
 void
@@ -61,7 +93,12 @@ cover_fractions (const struct cover *cover, const struct composition *compositio
     x[i] = 0;
   }
   for (size_t i = 0; i < composition->count; i++) {
-    const int at = cover_find (cover, composition->species[i]->key);
+    const struct species *s = composition->species[i];
+    int at = cover_find (cover, s->key);
+
+    if (at < 0) {
+      at = cover_nearest (cover, s);
+    }
     if (at >= 0) {
       x[at] += composition->fraction[i];
     }

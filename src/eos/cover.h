@@ -5,7 +5,7 @@
 #include <stdbool.h>
 #include <stddef.h>
 
-struct composition;
+struct composition; struct species;
 
 /* Rows of STRIDE bytes that begin with a key of up to seven letters, padded with null bytes.  */
 enum { COVER_KEY = 8 };
@@ -13,10 +13,15 @@ struct cover { const char *keys; size_t stride, count; };
 
 /* The row of a key, or -1.  */
 int cover_find (const struct cover *, const char *key);
+/* The row a species is lumped with: of all but water, the one whose van der Waals attraction
+   a = (9/8) R Tc Vc is nearest by ratio, taken from the figures of GERG-2008.  -1 where Tc, or both
+   Vc and pc, are not known.  So benzene is taken for a pentane, krypton for methane.            */
+int cover_nearest (const struct cover *, const struct species *);
 /* As in struct equation.  */
-double cover_left_out (const struct cover *, const struct composition *);
+double cover_lumped (const struct cover *, const struct composition *);
 bool cover_all (const struct cover *, const struct composition *, const char **lacking);
-/* Mole fractions by row.  What is left out is taken away from the whole.  */
+/* Mole fractions by row, what is lumped with its nearest.  A trace of which too little is known for
+   that is taken away from the whole.                                                            */
 void cover_fractions (const struct cover *, const struct composition *, double x[]);
 
 #endif

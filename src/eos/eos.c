@@ -15,7 +15,7 @@ struct eos_mixture {
   const struct equation *equation;
   const char *name;                        /* what a fault calls it */
   const void *prepared;
-  double left_out;
+  double lumped;
 };
 
 /* Choice.  */
@@ -285,7 +285,7 @@ eos_solve_prepared (const struct eos_mixture *mixture, double T, double p,
   state->equation = equation;
   state->Z = Z;
   state->density = roots.gas;
-  state->left_out = mixture->left_out;
+  state->lumped = mixture->lumped;
   state->range = equation->range != NULL ? equation->range (mixture->prepared, T, p)
                                          : EOS_RANGE_UNSTATED;
   state->uncertainty = equation->uncertainty != NULL
@@ -344,7 +344,7 @@ mixture_in (void *memory, const struct equation *equation,
     .equation = equation,
     .name = composition->count == 1 ? composition->species[0]->key : "the mixture",
     .prepared = memory,
-    .left_out = equation->left_out != NULL ? equation->left_out (composition) : 0,
+    .lumped = equation->lumped != NULL ? equation->lumped (composition) : 0,
   };
 }
 
@@ -364,7 +364,7 @@ bool
 eos_solve (const struct equation *equation, const struct composition *composition, double T,
            double p, struct eos_state *state, struct fault *fault)
 {
-  _Alignas (max_align_t) unsigned char memory[8192];
+  _Alignas (max_align_t) unsigned char memory[4096];
   const size_t size = equation->mixture_size (composition->count);
   struct arena *arena = size > sizeof memory ? arena_create () : NULL;
   void *where = arena != NULL ? arena_alloc (arena, 1, size) : memory;

@@ -34,8 +34,8 @@ enum eos_range {
   EOS_RANGE_OUTSIDE
 };
 
-/* Traces an equation of reference lacks are left out, and the rest of the gas taken for the whole,
-   as long as they are together below this mole fraction.                                        */
+/* Traces an equation of reference lacks are lumped with what it has, as long as they are together
+   below this mole fraction: each is taken for the component most like it (eos/cover.h).         */
 #define EOS_TRACES 0.005
 
 /* COUNT states, T in K and p in Pa.  */
@@ -45,11 +45,11 @@ struct equation {
   const char *name;                        /* "Peng-Robinson" */
   const char *source;
   double gas_constant;                     /* J/(mol K), the one the equation was made with */
-  /* Does it cover every species, but for traces it may leave out?  *LACKING is the key of the
-     first it lacks, or null.                                                                    */
+  /* Does it cover every species, but for traces it may lump?  *LACKING is the key of the first it
+     lacks, or null.                                                                             */
   bool (*covers) (const struct composition *, const char **lacking);
-  /* The mole fraction of what is left out; null: nothing ever is.  */
-  double (*left_out) (const struct composition *);
+  /* The mole fraction of what is lumped; null: nothing ever is.  */
+  double (*lumped) (const struct composition *);
   /* Where a state of MIXTURE lies; null: unstated.  */
   enum eos_range (*range) (const void *mixture, double T, double p);
   /* The relative expanded uncertainty (k = 2) of the density at a state, as published; NAN where
@@ -87,7 +87,7 @@ const char *gas_model_name (enum gas_model);             /* "auto", "ideal", "Pe
 /* The equation of a model; null for auto.  */
 const struct equation *gas_model_equation (enum gas_model);
 
-/* The choice for a composition: for auto the best equation that covers it, else the ideal gas
+/* The choice for a composition at no state in particular: for auto Peng-Robinson, else the ideal gas
    with *LACKING the key of the first species the better one lacks a constant of (null where
    nothing is lacking).  For a named model its equation; null with the kind model-lacks (facts:
    model, species).                                                                              */
@@ -106,7 +106,7 @@ struct eos_state {
   double density;                          /* mol/m3 */
   bool may_condense;                       /* a denser root is the more stable one */
   enum eos_range range;
-  double left_out;                         /* mole fraction of traces the equation lacks */
+  double lumped;                           /* mole fraction of traces the equation lacks */
   double uncertainty;                      /* of the density, relative, k = 2; NAN: unpublished */
 };
 

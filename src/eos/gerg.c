@@ -101,9 +101,9 @@ gerg_covers (const struct composition *composition, const char **lacking)
 }
 
 static double
-gerg_left_out (const struct composition *composition)
+gerg_lumped (const struct composition *composition)
 {
-  return cover_left_out (&gerg_table.cover, composition);
+  return cover_lumped (&gerg_table.cover, composition);
 }
 
 static size_t
@@ -170,7 +170,7 @@ const struct equation equation_gerg_2008 = {
   .source = "O. Kunz, W. Wagner, J. Chem. Eng. Data 57 (2012) 3032-3091; ISO 20765-2",
   .gas_constant = 8.314472,
   .covers = gerg_covers,
-  .left_out = gerg_left_out,
+  .lumped = gerg_lumped,
   .range = gerg_range,
   .uncertainty = gerg_uncertainty,
   .caloric = gerg_caloric,

@@ -36,7 +36,7 @@ add_vibration (double n, double y, bool is_sinh, struct ideal *sum)
   }
 }
 
-/* Without ln(rho/rho_0).  With r the ratio of R* to R, r (n2 + T0) - T0 takes the place of n2, since
+/* Without ln(rho/rho_0).  With r the ratio of R* to R, r (n2 + T0) - T0 takes the place of n2, as
    the state of no enthalpy is that of an ideal gas, whose p v has R.                            */
 static struct ideal
 ideal_of (const struct gerg_ideal *row, double T)

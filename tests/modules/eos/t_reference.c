@@ -37,7 +37,7 @@ density_of (struct arena *arena, const struct equation *equation, char *cells[],
   }
   CHECK (state.equation == equation);
   CHECK (!state.may_condense);
-  CHECK (!(state.left_out > 0));
+  CHECK (!(state.lumped > 0));
   *Z = state.Z;
   return state.density;
 }
@@ -159,7 +159,9 @@ zero_of_enthalpy (void)
   arena_destroy (arena);
 }
 
-/* Traces below 0.5 mol% are left out, and said; more are not covered.  */
+/* Traces below 0.5 mol% are lumped, and said; more are not covered.  By Tc (0.27 R Tc/pc) ethylene
+   is at 35.5 K L/mol and ammonia at 32.5; of GERG-2008 hydrogen sulfide is at 36.6, carbon dioxide
+   at 28.6, ethane at 44.4.                                                                      */
 static void
 traces (void)
 {
@@ -168,7 +170,7 @@ traces (void)
   const char *lacking = NULL;
   struct fault fault;
   const struct composition *gas = fluid_mixture (arena, "CH4=0.9;N2=0.096;C2H4=0.003;NH3=0.001");
-  const struct composition *rest = fluid_mixture (arena, "CH4=0.9;N2=0.096");
+  const struct composition *rest = fluid_mixture (arena, "CH4=0.9;N2=0.096;H2S=0.004");
   const struct composition *more = fluid_mixture (arena, "CH4=0.9;N2=0.095;C2H4=0.004;NH3=0.001");
 
   fault_init (&fault, arena);
@@ -176,7 +178,8 @@ traces (void)
   SAME_TEXT (lacking, NULL);
   CHECK (eos_solve (GERG, gas, 300, 5e6, &with, &fault));
   CHECK (eos_solve (GERG, rest, 300, 5e6, &without, &fault));
-  NEAR (with.left_out, 0.004, 1e-14);
+  NEAR (with.lumped, 0.004, 1e-14);
+  CHECK (!(without.lumped > 0));
   NEAR (with.Z, without.Z, 1e-13);
   CHECK (equation_choose_at (GAS_MODEL_AUTO, more, 300, 5e6, &lacking, &fault)
          == &equation_peng_robinson);
@@ -184,6 +187,80 @@ traces (void)
   SAME_INT (fault.kind, MESSAGE_MODEL_LACKS);
   SAME_TEXT (fault.fact[1], "C2H4");
   arena_destroy (arena);
+}
+
+/* Just below the vapour pressure the gas is the more stable, just above the liquid, far above there
+   is only a liquid.  Vapour pressures of the reference equations (Setzmann and Wagner 1991, Span
+   and Wagner 1996, Lemmon 2009, Span 2000, IAPWS-95), from memory; those of GERG-2008 are within
+   some tenths of a per cent.                                                                    */
+static void
+saturation (void)
+{
+  static const struct { const char *gas; double T, p, far; } rows[] = {
+    { "CH4=1", 150, 1.0400e6, 5e6 },   { "CO2=1", 250, 1.7850e6, 8e6 },
+    { "C3H8=1", 300, 0.9978e6, 4e6 },  { "N2=1", 100, 0.7783e6, 3e6 },
+    { "H2O=1", 400, 0.24577e6, 9e6 },
+  };
+  struct arena *arena = arena_create ();
+
+  for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+    const struct composition *gas = fluid_mixture (arena, rows[i].gas);
+    struct eos_state state = { .Z = 0 };
+    struct fault fault;
+
+    test_about ("%s", rows[i].gas);
+    fault_init (&fault, arena);
+    CHECK (eos_solve (GERG, gas, rows[i].T, rows[i].p * 0.99, &state, &fault));
+    CHECK (!state.may_condense);
+    CHECK (eos_solve (GERG, gas, rows[i].T, rows[i].p * 1.01, &state, &fault));
+    CHECK (state.may_condense);
+    CHECK (!eos_solve (GERG, gas, rows[i].T, rows[i].far, &state, &fault));
+    SAME_INT (fault.kind, MESSAGE_STATE_LIQUID);
+  }
+  arena_destroy (arena);
+}
+
+/* (Z - 1)/rho of a thin gas in cm3/mol.  */
+static double
+virial_of (struct arena *arena, const struct equation *equation, const struct composition *gas,
+           double T)
+{
+  _Alignas (max_align_t) unsigned char isotherm[EOS_ISOTHERM_SIZE];
+  void *mixture = arena_alloc (arena, 1, equation->mixture_size (gas->count));
+
+  equation->prepare (gas, mixture);
+  equation->set_isotherm (mixture, T, isotherm);
+  return equation->residual (isotherm, 1e-3).a1 / 1e-3 * 1e6;
+}
+
+/* Water vapour is rough in both equations (B of GERG-2008 is 20 % too low near 373 K), and isobutane
+   in DETAIL (7 % too low): that is how they are published.                                      */
+static void
+one_virial (char *cells[])
+{
+  enum { KEY, T_COLUMN, B_CM3, TOLERANCE };
+  struct arena *arena = arena_create ();
+  const struct species *species = fluid_find (cells[KEY]);
+  const double T = strtod (cells[T_COLUMN], NULL), tolerance = strtod (cells[TOLERANCE], NULL);
+  const char *lacking;
+
+  if (species != NULL && strcmp (species->key, "H2O") != 0) {
+    const struct composition *gas = composition_pure (arena, species);
+    const bool rough = strcmp (species->key, "iC4H10") == 0;
+    const double B = strtod (cells[B_CM3], NULL);
+
+    if (GERG->covers (gas, &lacking)) {
+      NEAR ((virial_of (arena, GERG, gas, T) - B) / tolerance, 0, 1);
+      NEAR ((virial_of (arena, DETAIL, gas, T) - B) / tolerance, 0, rough ? 3 : 1);
+    }
+  }
+  arena_destroy (arena);
+}
+
+static void
+virial_coefficients (void)
+{
+  CHECK (test_each_row ("numbers/second_virial.tsv", 5, one_virial) > 100);
 }
 
 /* Kunz and Wagner (2012), abstract: 90 to 450 K and 35 MPa, extended 60 to 700 K and 70 MPa.  */
@@ -223,7 +300,9 @@ main (int argc, char *argv[])
     { "published states", published_states },
     { "printed figures", printed_figures },
     { "zero of enthalpy", zero_of_enthalpy },
-    { "traces are left out", traces },
+    { "traces are lumped", traces },
+    { "saturation", saturation },
+    { "second virial coefficients", virial_coefficients },
     { "ranges", ranges },
     { NULL, NULL }
   };
