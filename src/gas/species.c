@@ -159,19 +159,22 @@ species_longest_name (const struct species_table *table, const char *text, size_
 }
 
 const struct species *
-species_stated (struct species_table *table, const char *name, double molar_mass)
+species_stated (struct species_table *table, const char *name,
+                const struct stated_figures *figures)
 {
   size_t length = strlen (name);
-  char *identity = ARENA_ARRAY (table->arena, length + 1 + sizeof molar_mass, char);
-  size_t n = length + 1 + sizeof molar_mass;
+  char *identity = ARENA_ARRAY (table->arena, length + 1 + sizeof *figures, char);
+  size_t n = length + 1 + sizeof *figures;
   const struct species *made;
 
   memcpy (identity, name, length + 1);
-  memcpy (identity + length + 1, &molar_mass, sizeof molar_mass);
+  memcpy (identity + length + 1, figures, sizeof *figures);
   made = map_find (table->made, identity, n);
   if (made == NULL) {
     struct species one = { .key = identity, .name = identity, .formula = "",
-                           .molar_mass = molar_mass, .source = "as stated",
+                           .molar_mass = figures->molar_mass,
+                           .stated_gross = figures->gross,
+                           .stated_net = figures->net, .source = "as stated",
                            .origin = SPECIES_STATED };
 
     made = make_bare (table, one, identity, n);

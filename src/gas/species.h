@@ -29,7 +29,11 @@ struct species {
   const char *source;                                   /* of the constants */
   const char *note;
   enum species_origin origin;
+  double stated_gross, stated_net;                      /* J/mol, of a SPECIES_STATED; 0: unstated */
 };
+
+/* What is known of a gas without a composition: kg/mol, and J/mol or 0.  */
+struct stated_figures { double molar_mass, gross, net; };
 
 /* Reads species, elements, ambiguous names, exposure and flammability tables.  Owned.  */
 struct species_table *species_table_create (const char *directory, struct fault *) MUST_CHECK;
@@ -53,9 +57,9 @@ enum species_match species_find (struct species_table *, const char *name, size_
    several words ("carbon dioxide", "dry air"); its bytes, 0 if none.  "dry air" counts.        */
 size_t species_longest_name (const struct species_table *, const char *text, size_t n);
 
-/* A gas of which only a molar mass (kg/mol) is known.  Made once for a name and mass.  */
+/* A gas of which only these figures are known.  Made once for a name and figures.  */
 const struct species *species_stated (struct species_table *, const char *name,
-                                      double molar_mass) MUST_CHECK;
+                                      const struct stated_figures *) MUST_CHECK;
 
 /* The key nearest to a misspelt name, or null.  */
 const char *species_nearest (const struct species_table *, const char *name, size_t n);

@@ -157,7 +157,7 @@ other_of (struct arena *arena, const struct assumption *a, struct other *o)
   case ALTERNATIVE_REAL:
     o->settings.model = GAS_MODEL_AUTO;
     o->overridden = TOUCH_MODEL;
-    o->name = gas_model_name (GAS_MODEL_PENG_ROBINSON);
+    o->name = "real gas";
     return true;
   case ALTERNATIVE_SITE:
     o->overridden = TOUCH_SITE;
@@ -183,6 +183,11 @@ other_of (struct arena *arena, const struct assumption *a, struct other *o)
     o->settings.below = BELOW_LIMIT;
     o->overridden = TOUCH_BELOW;
     o->name = "at the limit";
+    return true;
+  case ALTERNATIVE_COMBUSTION:
+    o->settings.combustion = 298.15;
+    o->overridden = TOUCH_COMBUSTION;
+    o->name = "at 25 degC";
     return true;
   case ALTERNATIVE_BAROMETER:
     o->settings.site_pressure *= 1 + WHETHER_IT_MATTERS;

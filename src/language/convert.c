@@ -34,6 +34,7 @@ conversion_add (struct conversion *c, double si, const struct standing *standing
   struct figure figure = { standing->what, value, c->unit, c->unit_text, standing->moisture,
                            standing->basis, c->label,
                            c->value->kind == VALUE_PART || c->value->kind == VALUE_TRACE
+                           || c->value->kind == VALUE_CALORIFIC
                            || (c->value->kind == VALUE_QUANTITY && c->value->basis) };
   figures_add (c->ev, c->figures, &figure);
   return true;
@@ -67,6 +68,10 @@ usual_unit (const struct value *v)
     return "mol%";
   case VALUE_RATIO:
     return "mol/mol";
+  case VALUE_CALORIFIC:
+    return "MJ/m3";
+  case VALUE_LIMITS:
+    return "vol%";
   case VALUE_QUANTITY:
   case VALUE_TRACE:
   case VALUE_SPECIFIC:
@@ -97,7 +102,7 @@ settle_unit (struct conversion *c, const struct value *v)
   }
   c->unit = unit;
   c->unit_text = unit ? unit->spelling : "";
-  c->words = v->words & (WORD_DRY | WORD_REAL | WORD_IDEAL);
+  c->words = v->words;
   return true;
 }
 
@@ -128,9 +133,6 @@ settle_target (struct conversion *c, const struct target *t)
   }
   c->words |= c->state.moisture == MOISTURE_DRY ? WORD_DRY : 0;
   c->words |= c->state.ideal ? WORD_IDEAL : c->state.real ? WORD_REAL : 0;
-  if (c->words & (WORD_GROSS | WORD_NET)) {
-    return fault_set_at (ev->fault, MESSAGE_NOT_AVAILABLE, t->at, "calorific values", NULL);
-  }
   return true;
 }
 
@@ -143,7 +145,7 @@ convert_ratio (struct conversion *c)
     return conversion_add (c, v->mass, &standing);
   }
   if (c->unit->ratio == RATIO_ENERGY) {
-    return fault_set_at (c->ev->fault, MESSAGE_NOT_AVAILABLE, c->at, "calorific values", NULL);
+    return convert_energy_ratio (c);
   }
   if (c->unit->ratio == RATIO_NONE) {
     return conversion_mismatch (c, "a ratio of two flows has no such unit");
@@ -203,6 +205,10 @@ convert_value (struct evaluation *ev, const struct value *value, const struct ta
     return convert_trace (&c);
   case VALUE_SPECIFIC:
     return convert_specific (&c);
+  case VALUE_CALORIFIC:
+    return convert_calorific (&c);
+  case VALUE_LIMITS:
+    return convert_limits (&c);
   case VALUE_RATIO:
     return convert_ratio (&c);
   }

@@ -32,6 +32,10 @@ bool convert_gas (struct conversion *) MUST_CHECK;
 bool convert_part (struct conversion *) MUST_CHECK;
 bool convert_trace (struct conversion *) MUST_CHECK;
 bool convert_specific (struct conversion *) MUST_CHECK;
+bool convert_calorific (struct conversion *) MUST_CHECK;
+bool convert_limits (struct conversion *) MUST_CHECK;
+bool convert_energy (struct conversion *, const struct composition *, double moles) MUST_CHECK;
+bool convert_energy_ratio (struct conversion *) MUST_CHECK;
 
 /* Is the unit a share or a concentration?  */
 bool unit_is_concentration (const struct unit *);

@@ -40,7 +40,7 @@ host_of (struct conversion *c, struct host *host)
   } else if (c->has_state && c->state.moisture != MOISTURE_NONE) {
     double T = isnan (c->state.T) ? host->state.T : c->state.T;
     double p = isnan (c->state.p) ? host->state.p : c->state.p;
-    if (!state_water (c->ev, &c->state, T, p, &y_target)) {
+    if (!state_water (c->ev, &c->state, &(struct moist_place) { T, p, host->gas }, &y_target)) {
       fault_place (c->ev->fault, c->at);
       return false;
     }
@@ -215,7 +215,7 @@ convert_part (struct conversion *c)
     return concentration (c);
   }
   enum flow_basis basis = flow_basis_of (&m, &flow);
-  if (basis == FLOW_NONE || basis == FLOW_ENERGY) {
+  if (basis == FLOW_NONE) {
     return conversion_mismatch (c, "a component is told as a share, a concentration, or a flow of "
                                 "mass, moles or volume");
   }
@@ -228,6 +228,12 @@ convert_part (struct conversion *c)
   if (flow != v->flow) {
     return conversion_mismatch (c, flow ? "this is an amount, not a flow"
                                         : "this is a flow, not an amount");
+  }
+  if (basis == FLOW_ENERGY) {
+    if (v->species.count != 1) {
+      return conversion_mismatch (c, "only a single component has an energy of its own");
+    }
+    return convert_energy (c, composition_pure (c->ev->arena, v->species.at[0]), v->moles);
   }
   return partial_flow (c, basis);
 }

@@ -260,6 +260,12 @@ convert_quantity (struct conversion *c)
     if (special ? m->sort != c->unit->sort : !ratio_fits (m->ratio, c->unit->ratio)) {
       return plain_number_in (c);
     }
+  } else if (!same && v->gas && v->gas->closed
+             && dimension_equal (dimension_times (m->dimension, DIMENSION_MASS),
+                                 dimension_times (d, DIMENSION_AMOUNT))) {
+    /* A property per mass told per mole.  */
+    struct standing standing = { c->what, moisture_word (c->ev, v->gas->closed), v->basis };
+    return conversion_add (c, v->si * v->gas->closed->molar_mass, &standing);
   } else if (!same && v->gas && v->gas->closed && dimension_equal (m->dimension, DIMENSION_DENSITY)
              && dimension_equal (d, DIMENSION_MOLAR_DENSITY) && c->unit->family_power == 0) {
     struct standing standing = { c->what, moisture_word (c->ev, v->gas->closed), v->basis };

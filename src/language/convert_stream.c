@@ -90,13 +90,11 @@ convert_stream (struct conversion *c)
     return conversion_mismatch (c, "a stream is told as a flow or an amount of mass, moles or "
                                 "volume, or as shares");
   }
-  if (basis == FLOW_ENERGY) {
-    fault_set_at (c->ev->fault, MESSAGE_GROSS_OR_NET, c->at, NULL, NULL);
-    fault_hint (c->ev->fault, "in %s gross, in %s net", c->unit_text, c->unit_text);
-    return false;
-  }
   if (flow != stream.flow) {
     return flow_mismatch (c, flow);
+  }
+  if (basis == FLOW_ENERGY) {
+    return convert_energy (c, stream.gas, stream.moles);
   }
   if (!as_counted (c, &stream)) {
     return false;

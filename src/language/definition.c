@@ -84,31 +84,86 @@ definition_release (struct definition *d)
 
 /* ---- Working it out ---- */
 
+/* A stated calorific value as J/mol: per mole, per kilogram, per reference volume, or per cubic
+   metre at the conditions of Sm3, of an ideal gas.                                              */
 static bool
-stated_gas (struct evaluation *ev, const struct statement *s, struct value *out)
+stated_heat (struct evaluation *ev, const struct stated_property *p, const struct value *v,
+             double molar_mass, double *H)
 {
-  double molar_mass = UNSTATED;
-  for (const struct stated_property *p = s->stated; p; p = p->next) {
-    struct value v;
-    if (!evaluate_quantity (ev, p->quantity, &v)) {
+  struct dimension d = v->measure.dimension;
+  double Vm;
+  if (dimension_equal (dimension_times (d, DIMENSION_AMOUNT), DIMENSION_ENERGY)) {
+    *H = v->si;
+  } else if (dimension_equal (dimension_times (d, DIMENSION_MASS), DIMENSION_ENERGY)) {
+    *H = v->si * molar_mass;
+  } else if (dimension_equal (dimension_times (d, DIMENSION_VOLUME), DIMENSION_ENERGY)) {
+    enum reference_family family = v->measure.family_power ? v->measure.family : FAMILY_STANDARD;
+    if (!family_molar_volume (ev, family, NULL, false, &Vm)) {
       return false;
     }
+    *H = v->si * Vm;
+  } else {
+    return fault_set_at (ev->fault, MESSAGE_UNIT_MISMATCH, p->quantity->at,
+                         "a calorific value is energy per volume, mass or mole", NULL);
+  }
+  return *H > 0 || fault_set_at (ev->fault, MESSAGE_RANGE, p->quantity->at,
+                                 "a calorific value is above zero", NULL);
+}
+
+static bool
+stated_molar_mass (struct evaluation *ev, const struct statement *s, double *molar_mass)
+{
+  for (const struct stated_property *p = s->stated; p; p = p->next) {
+    struct value v;
     if (p->property != PROPERTY_MOLAR_MASS) {
-      return fault_set_at (ev->fault, MESSAGE_NOT_AVAILABLE, p->quantity->at,
-                           "gases by more than their molar mass", NULL);
+      continue;
+    }
+    if (!evaluate_quantity (ev, p->quantity, &v)) {
+      return false;
     }
     if (!dimension_equal (v.measure.dimension, DIMENSION_MOLAR_MASS) || !(v.si > 0)) {
       return fault_set_at (ev->fault, MESSAGE_UNIT_MISMATCH, p->quantity->at,
                            "a molar mass is a figure in g/mol above zero", NULL);
     }
-    molar_mass = v.si;
+    *molar_mass = v.si;
+    return true;
+  }
+  fault_set_at (ev->fault, MESSAGE_KIND_WRONG, s->stated->quantity->at,
+                "a gas known by figures alone needs its molar mass", NULL);
+  fault_hint (ev->fault, "gas %s with molar mass 19.8 g/mol, ...", s->name);
+  return false;
+}
+
+static bool
+stated_gas (struct evaluation *ev, const struct statement *s, struct value *out)
+{
+  struct stated_figures figures = { 0, 0, 0 };
+  if (!stated_molar_mass (ev, s, &figures.molar_mass)) {
+    return false;
+  }
+  for (const struct stated_property *p = s->stated; p; p = p->next) {
+    struct value v;
+    bool gross = p->property == PROPERTY_GROSS_CALORIFIC_VALUE;
+    if (p->property == PROPERTY_MOLAR_MASS) {
+      continue;
+    }
+    if (!gross && p->property != PROPERTY_NET_CALORIFIC_VALUE) {
+      return fault_set_at (ev->fault, MESSAGE_NOT_AVAILABLE, p->quantity->at,
+                           "gases by more than molar mass and calorific values", NULL);
+    }
+    if (!evaluate_quantity (ev, p->quantity, &v)
+        || !stated_heat (ev, p, &v, figures.molar_mass, gross ? &figures.gross : &figures.net)) {
+      return false;
+    }
   }
   const struct species *species = species_stated (ev->session->vocabulary.species, s->name,
-                                                  molar_mass);
+                                                  &figures);
   *out = value_number (UNSTATED);
   out->kind = VALUE_GAS;
   out->gas = gas_of_composition (ev, composition_pure (ev->arena, species), s->name);
-  note (ev, MESSAGE_NOTE_STATED_ONLY, s->name, "its molar mass", NULL);
+  note (ev, MESSAGE_NOTE_STATED_ONLY, s->name,
+        figures.gross > 0 || figures.net > 0 ? "its molar mass and calorific value"
+                                             : "its molar mass", NULL);
   return out->gas != NULL;
 }
 
@@ -143,9 +198,6 @@ stream_body (struct evaluation *ev, const struct statement *s, struct value *out
     return false;
   }
   if (out->kind == VALUE_STREAM) {
-    if (s->value->kind == NODE_ADD && isnan (out->stream.T) && !isnan (out->stream.p)) {
-      note (ev, MESSAGE_NOTE_TEMPERATURE_UNSTATED, s->name, NULL, NULL);
-    }
     return true;
   }
   fault_set_at (ev->fault, MESSAGE_KIND_WRONG, s->value->at,

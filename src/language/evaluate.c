@@ -137,6 +137,8 @@ bring_to_state (struct evaluation *ev, struct value *v, const struct state *stat
   case VALUE_PART:
   case VALUE_TRACE:
   case VALUE_SPECIFIC:
+  case VALUE_CALORIFIC:
+  case VALUE_LIMITS:
   case VALUE_RATIO:
     break;
   }

@@ -1,5 +1,5 @@
 #include "config.h"
-#include "language/evaluation.h"
+#include "language/evaluate_property.h"
 
 #include <math.h>
 #include <string.h>
@@ -8,23 +8,10 @@
 #include "gas/species.h"
 #include "language/session_private.h"
 #include "language/wording.h"
+#include "property/calorific.h"
 #include "property/moist.h"
 #include "support/arena.h"
 #include "units/constants.h"
-
-/* Molar mass of dry air, kg/mol, over which a relative density is taken (ISO 6976:2016, clause 7
-   and annex A: 28.96546 kg/kmol).                                                               */
-#define AIR_MOLAR_MASS 28.96546e-3
-
-/* One property asked of something at a state.  */
-struct question {
-  enum property property;
-  const struct node *node;                 /* the whole `property of thing` */
-  const struct composition *gas;
-  const struct gas_value *value;           /* the gas as stated, if it is one; or null */
-  double T, p, Z;
-  bool ideal;
-};
 
 static const char *const property_text[] = {
 #define PROPERTY(name, text, unit, help) text,
@@ -38,9 +25,9 @@ static const char *const property_unit[] = {
 #undef PROPERTY
 };
 
-/* The figure in SI, with the unit it is answered in.  */
-static bool
-answer (struct evaluation *ev, const struct question *q, double si, struct value *out)
+bool
+property_answer (struct evaluation *ev, const struct property_question *q, double si,
+                 struct value *out)
 {
   const char *spelling = property_unit[q->property];
   *out = value_number (si);
@@ -57,8 +44,8 @@ answer (struct evaluation *ev, const struct question *q, double si, struct value
   return true;
 }
 
-static bool
-needs (struct evaluation *ev, const struct question *q, bool T, bool p)
+bool
+property_needs (struct evaluation *ev, const struct property_question *q, bool T, bool p)
 {
   if ((!T || !isnan (q->T)) && (!p || !isnan (q->p))) {
     return true;
@@ -74,18 +61,18 @@ needs (struct evaluation *ev, const struct question *q, bool T, bool p)
 
 /* Properties by the volume of a mole: density, molar volume, Z.  */
 static bool
-by_volume (struct evaluation *ev, const struct question *q, struct value *out)
+by_volume (struct evaluation *ev, const struct property_question *q, struct value *out)
 {
   double Vm, Z;
   const char *model;
   struct volume_question question = { q->gas, q->T, q->p, q->Z, q->ideal };
-  if (!needs (ev, q, true, true) || !actual_molar_volume (ev, &question, &Vm, &Z, &model)) {
+  if (!property_needs (ev, q, true, true) || !actual_molar_volume (ev, &question, &Vm, &Z, &model)) {
     fault_place (ev->fault, q->node->at);
     return false;
   }
   double si = q->property == PROPERTY_Z ? Z
               : q->property == PROPERTY_MOLAR_VOLUME ? Vm : q->gas->molar_mass / Vm;
-  if (!answer (ev, q, si, out)) {
+  if (!property_answer (ev, q, si, out)) {
     return false;
   }
   if (ev->describe) {
@@ -96,20 +83,22 @@ by_volume (struct evaluation *ev, const struct question *q, struct value *out)
 
 /* Properties of the water in it.  */
 static bool
-by_water (struct evaluation *ev, const struct question *q, struct value *out)
+by_water (struct evaluation *ev, const struct property_question *q, struct value *out)
 {
-  double y = composition_fraction (q->gas, ev->session->water), si;
-  bool humidity = q->property == PROPERTY_RELATIVE_HUMIDITY, ice = false;
-  if (!needs (ev, q, humidity, true)) {
+  double y = composition_fraction (q->gas, ev->session->water);
+  bool humidity = q->property == PROPERTY_RELATIVE_HUMIDITY;
+  if (!property_needs (ev, q, humidity, true)) {
     return false;
   }
-  bool done = humidity ? moist_humidity (y, q->T, q->p, &si, NULL, ev->fault)
-                       : moist_dew_point (y, q->p, &si, &ice, NULL, ev->fault);
+  struct moist_question ask = { humidity ? MOIST_HUMIDITY : MOIST_DEW_POINT, y, q->T, q->p,
+                                enhancement_is_for (q->gas) };
+  struct moist_answer moist;
+  bool done = moist_answer (&ask, &moist, NULL, ev->fault);
   if (!done) {
     fault_place (ev->fault, q->node->at);
     return false;
   }
-  if (!answer (ev, q, si, out)) {
+  if (!property_answer (ev, q, moist.value, out)) {
     return false;
   }
   if (ev->describe) {
@@ -117,19 +106,19 @@ by_water (struct evaluation *ev, const struct question *q, struct value *out)
     out->basis = humidity ? arena_format (ev->arena, "%s, %s, over liquid water",
                                           temperature_text (ev->arena, q->T, false), p)
                           : arena_format (ev->arena, "%s, over %s", p,
-                                          ice ? "ice" : "liquid water");
+                                          moist.phase == WATER_ICE ? "ice" : "liquid water");
   }
   return true;
 }
 
 /* Water content: the component H2O, asked for as a mass per volume.  */
 static bool
-water_content (struct evaluation *ev, const struct question *q, const struct value *of,
+water_content (struct evaluation *ev, const struct property_question *q, const struct value *of,
                struct value *out)
 {
   const struct species *water = ev->session->water;
   double y = composition_fraction (q->gas, water);
-  if (!answer (ev, q, UNSTATED, out)) {
+  if (!property_answer (ev, q, UNSTATED, out)) {
     return false;
   }
   out->kind = VALUE_PART;
@@ -150,7 +139,7 @@ water_content (struct evaluation *ev, const struct question *q, const struct val
 }
 
 static bool
-stated_total (struct evaluation *ev, const struct question *q, const struct value *of,
+stated_total (struct evaluation *ev, const struct property_question *q, const struct value *of,
               struct value *out)
 {
   if (of->kind != VALUE_GAS) {
@@ -173,7 +162,7 @@ stated_total (struct evaluation *ev, const struct question *q, const struct valu
 }
 
 static bool
-partial_pressure (struct evaluation *ev, const struct question *q, const struct value *of,
+partial_pressure (struct evaluation *ev, const struct property_question *q, const struct value *of,
                   struct value *out)
 {
   if (of->kind != VALUE_PART) {
@@ -184,20 +173,54 @@ partial_pressure (struct evaluation *ev, const struct question *q, const struct 
   for (size_t i = 0; i < of->species.count; i++) {
     x += composition_fraction (q->gas, of->species.at[i]);
   }
-  return needs (ev, q, false, true) && answer (ev, q, x * q->p, out);
+  return property_needs (ev, q, false, true) && property_answer (ev, q, x * q->p, out);
 }
 
-/* What this version has no data for: said plainly.  */
 static bool
-absent (struct evaluation *ev, const struct question *q)
+relative_density (struct evaluation *ev, const struct property_question *q, struct value *out)
 {
-  fault_set_at (ev->fault, MESSAGE_NOT_AVAILABLE, q->node->a->at, property_text[q->property],
-                NULL);
-  return false;
+  double air = heat_air_molar_mass (ev), d = q->gas->molar_mass / air;
+  bool real = q->state && q->state->real;
+  const char *basis = NULL;
+  if (real) {
+    struct heat_question heat = { q->gas, q->state->T, q->state->p, true };
+    if (!heat_figure (ev, &heat, CALORIFIC_RELATIVE_DENSITY, &d, &basis)) {
+      fault_place (ev->fault, q->node->at);
+      return false;
+    }
+  }
+  if (!property_answer (ev, q, d, out)) {
+    return false;
+  }
+  if (ev->describe) {
+    out->basis = real ? "real, compression factors of ISO 6976"
+                      : arena_format (ev->arena, "ideal gas, over dry air of %s g/mol",
+                                      figure_text (ev->arena, air * 1000));
+  }
+  return true;
+}
+
+/* A calorific value or a Wobbe index: worked out when the unit is known.  */
+static bool
+calorific (struct evaluation *ev, const struct property_question *q, struct value *out)
+{
+  static const int figure[PROPERTY_COUNT] = {
+    [PROPERTY_GROSS_CALORIFIC_VALUE] = CALORIFIC_GROSS_VOLUME,
+    [PROPERTY_NET_CALORIFIC_VALUE] = CALORIFIC_NET_VOLUME, [PROPERTY_WOBBE] = CALORIFIC_WOBBE,
+    [PROPERTY_NET_WOBBE] = CALORIFIC_NET_WOBBE };
+  if (!property_answer (ev, q, UNSTATED, out)) {
+    return false;
+  }
+  out->kind = VALUE_CALORIFIC;
+  out->heat = figure[q->property];
+  out->T = q->state ? q->state->T : UNSTATED;
+  out->p = q->state ? q->state->p : UNSTATED;
+  out->words = q->state && q->state->real ? WORD_REAL : 0;
+  return true;
 }
 
 static bool
-own_figure (struct evaluation *ev, const struct question *q, const struct value *of,
+own_figure (struct evaluation *ev, const struct property_question *q, const struct value *of,
             struct value *out)
 {
   bool T = q->property == PROPERTY_TEMPERATURE;
@@ -205,22 +228,18 @@ own_figure (struct evaluation *ev, const struct question *q, const struct value 
     return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, q->node->b->at,
                          "only a stream has a temperature and a pressure of its own", NULL);
   }
-  return needs (ev, q, T, !T) && answer (ev, q, T ? q->T : q->p, out);
+  return property_needs (ev, q, T, !T) && property_answer (ev, q, T ? q->T : q->p, out);
 }
 
 static bool
-dispatch (struct evaluation *ev, const struct question *q, const struct value *of,
+dispatch (struct evaluation *ev, const struct property_question *q, const struct value *of,
           struct value *out)
 {
   switch (q->property) {
   case PROPERTY_MOLAR_MASS:
-    return answer (ev, q, q->gas->molar_mass, out);
+    return property_answer (ev, q, q->gas->molar_mass, out);
   case PROPERTY_RELATIVE_DENSITY:
-    if (!answer (ev, q, q->gas->molar_mass / AIR_MOLAR_MASS, out)) {
-      return false;
-    }
-    out->basis = "ideal gas, over dry air of 28.96546 g/mol";
-    return true;
+    return relative_density (ev, q, out);
   case PROPERTY_DENSITY:
   case PROPERTY_MOLAR_VOLUME:
   case PROPERTY_Z:
@@ -240,28 +259,32 @@ dispatch (struct evaluation *ev, const struct question *q, const struct value *o
     out->kind = VALUE_GAS;
     out->gas = q->value ? q->value : gas_of_composition (ev, q->gas, NULL);
     return out->gas != NULL;
-  case PROPERTY_STATED_TOTAL:
   case PROPERTY_GROSS_CALORIFIC_VALUE:
   case PROPERTY_NET_CALORIFIC_VALUE:
   case PROPERTY_WOBBE:
   case PROPERTY_NET_WOBBE:
+    return calorific (ev, q, out);
   case PROPERTY_CP:
   case PROPERTY_CV:
   case PROPERTY_KAPPA:
   case PROPERTY_SPEED_OF_SOUND:
+    return property_caloric (ev, q, out);
   case PROPERTY_VISCOSITY:
+    return property_viscosity (ev, q, out);
   case PROPERTY_FLAMMABLE_LIMITS:
   case PROPERTY_LOWER_FLAMMABLE_LIMIT:
   case PROPERTY_UPPER_FLAMMABLE_LIMIT:
+    return property_flammable (ev, q, out);
+  case PROPERTY_STATED_TOTAL:
   case PROPERTY_COUNT:
     break;
   }
-  return absent (ev, q);
+  return false;
 }
 
 /* The gas a property is asked of, and its state where it has one.  */
 static bool
-subject (struct evaluation *ev, const struct value *of, struct question *q)
+subject (struct evaluation *ev, const struct value *of, struct property_question *q)
 {
   bool stream = of->kind == VALUE_STREAM || (of->kind == VALUE_PART && of->of_stream);
   if (stream) {
@@ -284,14 +307,9 @@ bool
 evaluate_property (struct evaluation *ev, const struct node *node, const struct state *state,
                    struct value *out)
 {
-  struct question q = { .property = node->a->property, .node = node, .T = UNSTATED, .p = UNSTATED,
+  struct property_question q = { .property = node->a->property, .node = node, .T = UNSTATED, .p = UNSTATED,
                         .Z = UNSTATED };
   struct value of;
-  /* A relative density or calorific value with `real` in its state is the standard's business.  */
-  if (state && state->real) {
-    return fault_set_at (ev->fault, MESSAGE_NOT_AVAILABLE, state->at,
-                         "the compression factor of ISO 6976", NULL);
-  }
   if (!evaluate (ev, node->b, state, &of)) {
     return false;
   }
@@ -301,6 +319,7 @@ evaluate_property (struct evaluation *ev, const struct node *node, const struct 
   if (!subject (ev, &of, &q)) {
     return false;
   }
+  q.state = state;
   if (state) {
     q.T = isnan (state->T) ? q.T : state->T;
     q.p = isnan (state->p) ? q.p : state->p;

@@ -7,6 +7,7 @@
 #include "gas/species.h"
 #include "language/session_private.h"
 #include "language/wording.h"
+#include "stream/blend.h"
 #include "support/arena.h"
 #include "units/unit.h"
 
@@ -131,10 +132,36 @@ negative_parts (struct evaluation *ev, const struct stream *a, const struct stre
   return list;
 }
 
+/* The adiabatic temperature of a blend of two streams whose temperatures are known.  */
+static bool
+blend_temperature (struct evaluation *ev, const struct node *node, const struct stream *one,
+                   const struct stream *other, struct value *blend)
+{
+  struct blend_temperature t;
+  struct fault fault;
+  if (isnan (one->T) || isnan (other->T) || !isnan (blend->stream.T)) {
+    return true;
+  }
+  fault_init (&fault, ev->arena);
+  if (!stream_blend_temperature (ev->session->properties, one, other, &t, NULL, &fault)) {
+    if (fault.kind != MESSAGE_MODEL_LACKS) {
+      return fault_set_at (ev->fault, fault.kind, node->at, fault.fact[0], fault.fact[1]);
+    }
+    note (ev, MESSAGE_NOTE_TEMPERATURE_UNSTATED, fault.fact[1], NULL, NULL);
+    return true;
+  }
+  blend->stream.T = t.T;
+  if (!isnan (t.T) && ev->result) {
+    note (ev, MESSAGE_NOTE_BLEND_TEMPERATURE, temperature_text (ev->arena, t.T, false), NULL, NULL);
+  }
+  return true;
+}
+
 static bool
 add_streams (struct evaluation *ev, const struct node *node, struct value *a,
              const struct value *b)
 {
+  struct stream before = a->stream;
   bool done = node->kind == NODE_ADD
                 ? stream_blend (ev->arena, &a->stream, &b->stream, &a->stream, ev->fault)
                 : stream_remainder (ev->arena, &a->stream, &b->stream, &a->stream, ev->fault);
@@ -148,8 +175,9 @@ add_streams (struct evaluation *ev, const struct node *node, struct value *a,
   }
   if (!done) {
     fault_place (ev->fault, node->b->at);
+    return false;
   }
-  return done;
+  return node->kind == NODE_SUBTRACT || blend_temperature (ev, node, &before, &b->stream, a);
 }
 
 static bool
@@ -174,6 +202,8 @@ kind_word (const struct value *v)
   case VALUE_PART: return "a component";
   case VALUE_TRACE: return "a concentration";
   case VALUE_SPECIFIC: return "a figure per quantity of gas";
+  case VALUE_CALORIFIC: return "a calorific value";
+  case VALUE_LIMITS: return "a pair of limits";
   case VALUE_RATIO: return "a ratio";
   }
   return "";
@@ -216,6 +246,8 @@ add (struct evaluation *ev, const struct node *node, struct value *a, struct val
   case VALUE_GAS:
   case VALUE_TRACE:
   case VALUE_SPECIFIC:
+  case VALUE_CALORIFIC:
+  case VALUE_LIMITS:
   case VALUE_RATIO:
     break;
   }
@@ -271,6 +303,8 @@ scale_value (struct evaluation *ev, const struct node *node, struct value *v, do
     return true;
   case VALUE_QUANTITY:
   case VALUE_GAS:
+  case VALUE_CALORIFIC:
+  case VALUE_LIMITS:
   case VALUE_RATIO:
     break;
   }
@@ -338,8 +372,13 @@ divide_likes (struct evaluation *ev, const struct node *node, struct value *a,
   if (fabs (bottom[0]) < 1e-300) {
     return wrong (ev, MESSAGE_RANGE, node->b, "nothing can be divided by zero");
   }
+  struct value *kept = ARENA_ARRAY (ev->arena, 2, struct value);
+  kept[0] = *a;
+  kept[1] = *b;
   *a = value_number (UNSTATED);
   a->kind = VALUE_RATIO;
+  a->top = &kept[0];
+  a->bottom = &kept[1];
   a->moles = top[0] / bottom[0];
   a->mass = top[1] / bottom[1];
   return true;

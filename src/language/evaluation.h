@@ -25,14 +25,14 @@ struct stand_in { const struct definition *definition; struct value value; };
 enum touch { TOUCH_SITE = 1u << 8, TOUCH_MODEL = 1u << 9, TOUCH_OXYGEN = 1u << 10,
              TOUCH_BELOW = 1u << 11, TOUCH_TOLERANCE = 1u << 12, TOUCH_BARE = 1u << 13,
              TOUCH_VOLUMES = 1u << 14, TOUCH_QUANTITY = 1u << 15,
-             TOUCH_VAPOUR = 1u << 16 };
+             TOUCH_VAPOUR = 1u << 16, TOUCH_COMBUSTION = 1u << 17 };
 static inline unsigned touch_family (enum reference_family f) { return 1u << (unsigned) f; }
 
 /* What the usual alternative to an assumption is.  The last two have none that is usual: they are
    tried only to see whether the assumption matters to the answer.                               */
 enum alternative { ALTERNATIVE_NONE, ALTERNATIVE_FAMILY, ALTERNATIVE_SHIPPED, ALTERNATIVE_SITE,
                    ALTERNATIVE_IDEAL, ALTERNATIVE_REAL, ALTERNATIVE_OXYGEN, ALTERNATIVE_BELOW,
-                   ALTERNATIVE_GAUGE, ALTERNATIVE_BAROMETER, ALTERNATIVE_VAPOUR };
+                   ALTERNATIVE_GAUGE, ALTERNATIVE_COMBUSTION, ALTERNATIVE_BAROMETER, ALTERNATIVE_VAPOUR };
 
 /* Something taken because the user left it open.  */
 struct assumption {
@@ -136,9 +136,12 @@ struct state state_empty (struct place at);
 bool evaluate_state (struct evaluation *, const struct node *, struct state *) MUST_CHECK;
 /* The share of water, of the wet gas, that a figure means: mol%, ppm or mg/Nm3.  */
 bool evaluate_water (struct evaluation *, const struct node *, double *y) MUST_CHECK;
-/* The water fraction a state's moisture means at T, p; false with FAULT.  *Y is 0 for dry.  */
-bool state_water (struct evaluation *, const struct state *, double T, double p, double *y)
-  MUST_CHECK;
+/* Where water is taken up: T, p and the gas that takes it (air has more, by its enhancement
+   factor; null: no air).                                                                        */
+struct moist_place { double T, p; const struct composition *gas; };
+/* The water fraction a state's moisture means; false with FAULT.  *Y is 0 for dry.  */
+bool state_water (struct evaluation *, const struct state *, const struct moist_place *,
+                  double *y) MUST_CHECK;
 /* The gas with the moisture of STATE (unchanged for MOISTURE_NONE) at its T, p or FALLBACK's. */
 bool state_wets (struct evaluation *, const struct state *, const struct stream *fallback,
                  const struct composition **, struct place at) MUST_CHECK;
@@ -148,6 +151,19 @@ bool state_apply (struct evaluation *, const struct state *, struct stream *, st
 /* An absolute pressure from a quantity; a bare unit is taken as absolute, and said so.  */
 bool quantity_pressure (struct evaluation *, const struct value *, const char *typed,
                         double *p) MUST_CHECK;
+
+/* ---- Heat (heat.c) ---- */
+
+/* What is asked of a gas's calorific value: at metering T, p (NAN: the conditions of Sm3).  */
+struct heat_question { const struct composition *gas; double T, p; bool real; };
+/* A figure of enum calorific_figure; *BASIS says what stands behind it.  */
+bool heat_figure (struct evaluation *, const struct heat_question *, int figure, double *value,
+                  const char **basis) MUST_CHECK;
+/* Molar mass (kg/mol) of the dry air a relative density is taken over.  */
+double heat_air_molar_mass (struct evaluation *);
+/* Gross or net, J/mol.  */
+bool heat_per_mole (struct evaluation *, const struct composition *, bool net, double *H)
+  MUST_CHECK;
 
 /* ---- Volumes (volume.c) ---- */
 

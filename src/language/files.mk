@@ -18,6 +18,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/commands/trim.c \
   %D%/convert.c \
   %D%/convert.h \
+  %D%/convert_heat.c \
   %D%/convert_part.c \
   %D%/convert_quantity.c \
   %D%/convert_stream.c \
@@ -27,10 +28,13 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/evaluate_list.c \
   %D%/evaluate_of.c \
   %D%/evaluate_property.c \
+  %D%/evaluate_property.h \
   %D%/evaluate_sum.c \
+  %D%/evaluate_thermal.c \
   %D%/evaluation.h \
   %D%/flow.c \
   %D%/flow.h \
+  %D%/heat.c \
   %D%/mentions.c \
   %D%/names.c \
   %D%/parse.c \

@@ -116,7 +116,15 @@ moles_per_figure (struct evaluation *ev, const struct flow_figure *f, const stru
       }
       return false;
     }
-    return fault_set_at (ev->fault, MESSAGE_NOT_AVAILABLE, f->typed->at, "calorific values", NULL);
+    if (!heat_per_mole (ev, counted, (q->words & WORD_NET) != 0, &Vm)) {
+      return false;
+    }
+    if (!(Vm > 0)) {
+      return fault_set_at (ev->fault, MESSAGE_RANGE, f->typed->at,
+                           "this gas does not burn: no flow of it carries energy", NULL);
+    }
+    *per = 1 / Vm;
+    return true;
   case FLOW_NONE:
     break;
   }

@@ -9,6 +9,8 @@
 #include "gas/species.h"
 #include "language/commands/commands.h"
 #include "language/wording.h"
+#include "property/calorific.h"
+#include "property/property_tables.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/map.h"
@@ -50,6 +52,7 @@ session_create (const struct session_options *options, struct fault *fault)
   struct session *s = memory_get (1, sizeof *s);
   s->options = *options;
   s->arena = arena_create ();
+  s->properties = property_tables_create (options->tables);
   s->names = map_create ();
   s->mentioned = map_create ();
   settings_init (&s->settings);
@@ -77,6 +80,8 @@ session_destroy (struct session *s)
   if (s->vocabulary.units) {
     unit_table_destroy (s->vocabulary.units);
   }
+  calorific_tables_destroy (s->calorific);
+  property_tables_destroy (s->properties);
   memory_release (s->last_subject);
   arena_destroy (s->arena);
   memory_release (s);

@@ -8,7 +8,8 @@
 #include "language/session.h"
 #include "support/check.h"
 
-struct composition; struct map; struct reference_table; struct remark; struct result;
+struct calorific_tables; struct composition; struct map; struct property_tables;
+struct reference_table; struct remark; struct result;
 struct species;
 
 enum name_kind { NAME_GAS, NAME_STREAM, NAME_QUANTITY, NAME_REFERENCE };
@@ -55,6 +56,8 @@ struct session {
   struct reference_table *references;
   const struct species *water, *oxygen;
   const struct composition *air;           /* as predefined */
+  struct calorific_tables *calorific;      /* read when first asked for; or null */
+  struct property_tables *properties;      /* each read when first asked for */
   struct arena *arena;                     /* what lasts: tables' extras, texts of settings */
   struct settings settings;
   struct map *names;                       /* of struct definition */

@@ -12,6 +12,7 @@
 #include "property/moist.h"
 #include "support/arena.h"
 #include "support/text.h"
+#include "units/constants.h"
 
 static bool
 twice (struct evaluation *ev, struct place at, const char *what)
@@ -293,50 +294,58 @@ evaluate_state (struct evaluation *ev, const struct node *node, struct state *st
   return true;
 }
 
-bool
-state_water (struct evaluation *ev, const struct state *state, double T, double p, double *y)
+/* What may not be: more water than gas can hold.  */
+static bool
+beyond_saturation (struct evaluation *ev, const struct state *state, double T)
 {
-  double psat;
-  bool over_ice = false;
-  switch (state->moisture) {
-  case MOISTURE_NONE:
-  case MOISTURE_DRY:
+  const char *why = state->moisture == MOISTURE_DEW_POINT && state->moist > T
+                      ? "the dew point lies above the temperature: no gas holds that much water"
+                    : state->moisture == MOISTURE_HUMIDITY && state->moist > 1
+                      ? "a relative humidity lies between 0 and 100 %" : NULL;
+  return why && !fault_set_at (ev->fault, MESSAGE_RANGE, state->at, why, NULL);
+}
+
+static void
+note_enhancement (struct evaluation *ev, const struct moist_answer *a)
+{
+  if (a->applied == ENHANCEMENT_APPLIED) {
+    note (ev, MESSAGE_NOTE_ENHANCEMENT, figure_text (ev->arena, a->factor), NULL, NULL);
+  } else if (a->applied == ENHANCEMENT_BEYOND_T || a->applied == ENHANCEMENT_BEYOND_P) {
+    note (ev, MESSAGE_NOTE_ENHANCEMENT_BEYOND, NULL, NULL, NULL);
+  }
+}
+
+bool
+state_water (struct evaluation *ev, const struct state *state, const struct moist_place *at,
+             double *y)
+{
+  static const enum moist_asked asked[] = {
+    [MOISTURE_SATURATED] = MOIST_SATURATED, [MOISTURE_HUMIDITY] = MOIST_BY_HUMIDITY,
+    [MOISTURE_DEW_POINT] = MOIST_BY_DEW_POINT };
+  struct moist_answer answer;
+  if (state->moisture == MOISTURE_NONE || state->moisture == MOISTURE_DRY) {
     *y = 0;
     return true;
-  case MOISTURE_FRACTION:
+  }
+  if (state->moisture == MOISTURE_FRACTION) {
     *y = state->moist;
     return true;
-  case MOISTURE_DEW_POINT:
-    if (state->moist > T) {
-      return fault_set_at (ev->fault, MESSAGE_RANGE, state->at,
-                           "the dew point lies above the temperature: no gas holds that much water",
-                           NULL);
-    }
-    if (!moist_by_dew_point (state->moist, p, y, &psat, &over_ice, NULL, ev->fault)) {
-      return false;
-    }
-    break;
-  case MOISTURE_SATURATED:
-    if (!moist_saturated (T, p, y, &psat, &over_ice, NULL, ev->fault)) {
-      return false;
-    }
-    break;
-  case MOISTURE_HUMIDITY:
-    if (state->moist > 1) {
-      return fault_set_at (ev->fault, MESSAGE_RANGE, state->at,
-                           "a humidity above 100 %RH: no gas holds that much water", NULL);
-    }
-    if (!moist_by_humidity (state->moist, T, p, y, &psat, NULL, ev->fault)) {
-      return false;
-    }
-    if (T < 273.15 && ev->describe) {
-      evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_HUMIDITY });
-    }
-    break;
+  }
+  if (beyond_saturation (ev, state, at->T)) {
+    return false;
+  }
+  struct moist_question question = { asked[state->moisture], state->moist, at->T, at->p,
+                                     at->gas && enhancement_is_for (at->gas) };
+  if (!moist_answer (&question, &answer, NULL, ev->fault)) {
+    return false;
+  }
+  if (state->moisture == MOISTURE_HUMIDITY && at->T < ICE_POINT && ev->describe) {
+    evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_HUMIDITY });
   }
   evaluation_touch (ev, TOUCH_VAPOUR);
-  *y *= ev->settings->vapour_factor;
-  assume_vapour_pressure (ev, psat, over_ice);
+  *y = answer.value * ev->settings->vapour_factor;
+  assume_vapour_pressure (ev, answer.psat, answer.phase == WATER_ICE);
+  note_enhancement (ev, &answer);
   return true;
 }
 
@@ -366,7 +375,7 @@ state_wets (struct evaluation *ev, const struct state *state, const struct strea
   if (!wants_state (state, T, p, &lacks)) {
     return fault_set_at (ev->fault, MESSAGE_STATE_MISSING, state->at, lacks, NULL);
   }
-  if (!state_water (ev, state, T, p, &y)) {
+  if (!state_water (ev, state, &(struct moist_place) { T, p, *gas }, &y)) {
     fault_place (ev->fault, state->at);
     return false;
   }

@@ -24,6 +24,8 @@ enum value_kind {
   VALUE_PART,          /* a component of a gas or of a stream */
   VALUE_TRACE,         /* a concentration of a component: 25 ppm of H2S */
   VALUE_SPECIFIC,      /* a figure per quantity of a gas: 4.7 kWh/Nm3 of H2 */
+  VALUE_CALORIFIC,     /* a calorific value or Wobbe index of a gas, per whatever is asked */
+  VALUE_LIMITS,        /* a lower and an upper limit */
   VALUE_RATIO          /* of two flows or two parts */
 };
 
@@ -71,6 +73,9 @@ struct value {
   double moles, mass;                      /* PART: mol(/s) and kg(/s), or per mol of gas;
                                               RATIO: by moles and by mass */
   bool flow;                               /* PART of a stream: per second */
+  int heat;                                /* CALORIFIC: which figure by volume */
+  double upper;                            /* LIMITS: the second; `si` is the first */
+  const struct value *top, *bottom;        /* RATIO: of what */
   double oxygen;                           /* TRACE: reference oxygen of its figure; else NAN */
 };
 

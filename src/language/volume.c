@@ -47,10 +47,43 @@ note_condensation (struct evaluation *ev, const struct volume_question *q)
   fault_init (&unheard, ev->arena);
   struct evaluation aside;
   evaluation_again (&aside, ev, &unheard);
-  if (y > 0 && state_water (&aside, &saturated, q->T, q->p, &saturation)
+  if (y > 0 && state_water (&aside, &saturated, &(struct moist_place) { q->T, q->p, q->gas },
+                            &saturation)
       && y > saturation * (1 + 1e-6)) {
     note (ev, MESSAGE_NOTE_CONDENSE, share_text (ev->arena, y),
           share_text (ev->arena, saturation), NULL);
+  }
+}
+
+/* The noble gases of air, 25 ppm, move no figure that is shown.  */
+#define TRACES_WORTH_A_NOTE 1e-4
+
+/* What the equation says of itself at the state: range, accuracy, what it left out.  */
+static void
+tell_model (struct evaluation *ev, const struct eos_state *state)
+{
+  const char *name = state->equation->name;
+  if (state->range == EOS_RANGE_EXTENDED) {
+    note (ev, MESSAGE_NOTE_MODEL_EXTENDED, name, NULL, NULL);
+  } else if (state->range == EOS_RANGE_OUTSIDE) {
+    note (ev, MESSAGE_NOTE_MODEL_OUTSIDE, name, NULL, NULL);
+  }
+  if (state->lumped > TRACES_WORTH_A_NOTE) {
+    note (ev, MESSAGE_NOTE_MODEL_TRACES, name, share_text (ev->arena, state->lumped), NULL);
+  }
+  if (state->may_condense) {
+    note (ev, MESSAGE_NOTE_TWO_PHASE, name, NULL, NULL);
+  }
+}
+
+static void
+assume_choice (struct evaluation *ev, const struct eos_state *state, const char *lacking)
+{
+  if (lacking && state->equation == &equation_ideal) {
+    evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_MODEL_LACKING,
+                                                  .fact = { lacking } });
+  } else {
+    assume_model (ev, state->equation->name, state->Z, state->uncertainty);
   }
 }
 
@@ -60,7 +93,8 @@ model_molar_volume (struct evaluation *ev, const struct volume_question *q, doub
 {
   const char *lacking = NULL;
   enum gas_model wanted = q->ideal ? GAS_MODEL_IDEAL : ev->settings->model;
-  const struct equation *equation = equation_choose (wanted, q->gas, &lacking, ev->fault);
+  const struct equation *equation = equation_choose_at (wanted, q->gas, q->T, q->p, &lacking,
+                                                        ev->fault);
   struct eos_state state;
   evaluation_touch (ev, TOUCH_MODEL);
   if (!equation || !eos_solve (equation, q->gas, q->T, q->p, &state, ev->fault)) {
@@ -73,20 +107,16 @@ model_molar_volume (struct evaluation *ev, const struct volume_question *q, doub
     evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_IDEAL_SET,
                                                   .alternative = ALTERNATIVE_REAL });
   }
-  if (q->ideal || ev->settings->is_set[SETTING_GAS_MODEL]) {
+  if (q->ideal || !ev->describe) {
     return true;
   }
-  if (lacking) {
-    if (ev->describe) {
-      evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_MODEL_LACKING,
-                                                    .fact = { lacking } });
-    }
-  } else {
-    assume_model (ev, equation->name, state.Z);
+  if (!ev->settings->is_set[SETTING_GAS_MODEL]) {
+    assume_choice (ev, &state, lacking);
+  } else if (isfinite (state.uncertainty)) {
+    note (ev, MESSAGE_NOTE_MODEL_UNCERTAINTY, equation->name,
+          figure_text (ev->arena, 100 * state.uncertainty), NULL);
   }
-  if (state.may_condense && ev->result) {
-    note (ev, MESSAGE_NOTE_TWO_PHASE, equation->name, NULL, NULL);
-  }
+  tell_model (ev, &state);
   return true;
 }
 

@@ -187,7 +187,7 @@ assume_vapour_pressure (struct evaluation *ev, double psat, bool over_ice)
 }
 
 void
-assume_model (struct evaluation *ev, const char *model, double Z)
+assume_model (struct evaluation *ev, const char *model, double Z, double uncertainty)
 {
   if (!ev->describe) {
     return;
@@ -195,7 +195,8 @@ assume_model (struct evaluation *ev, const char *model, double Z)
   const char *text = figure_text (ev->arena, Z);
   for (size_t i = 0; i < ev->assumption_count; i++) {
     struct assumption *a = &ev->assumptions[i];
-    if (a->kind == MESSAGE_TAKEN_MODEL && strcmp (a->fact[0], model) == 0) {
+    if ((a->kind == MESSAGE_TAKEN_MODEL || a->kind == MESSAGE_TAKEN_MODEL_WITHIN)
+        && strcmp (a->fact[0], model) == 0) {
       /* One line for all the Z of an answer.  */
       if (!strstr (a->fact[1], text)) {
         a->fact[1] = arena_format (ev->arena, "%s, %s", a->fact[1], text);
@@ -203,7 +204,11 @@ assume_model (struct evaluation *ev, const char *model, double Z)
       return;
     }
   }
-  assume (ev, MESSAGE_TAKEN_MODEL, model, text, ALTERNATIVE_IDEAL);
+  evaluation_assume (ev, &(struct assumption) {
+      .kind = isfinite (uncertainty) ? MESSAGE_TAKEN_MODEL_WITHIN : MESSAGE_TAKEN_MODEL,
+      .fact = { model, text, isfinite (uncertainty)
+                               ? figure_text (ev->arena, 100 * uncertainty) : NULL },
+      .alternative = ALTERNATIVE_IDEAL });
 }
 
 void

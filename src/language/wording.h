@@ -35,7 +35,8 @@ void assume_barometer (struct evaluation *, const char *figure, const char *unit
 void assume_site_pressure (struct evaluation *);
 void assume_family (struct evaluation *, enum reference_family);
 void assume_vapour_pressure (struct evaluation *, double psat, bool over_ice);
-void assume_model (struct evaluation *, const char *model, double Z);
+/* UNCERTAINTY of the density, relative, as published for k = 2; NAN: none is.  */
+void assume_model (struct evaluation *, const char *model, double Z, double uncertainty);
 /* Of a component: known by its formula alone, or from the user's own table.  */
 void note_species (struct evaluation *, const struct species *);
 /* A note or caution, if anybody listens.  Facts may be null.  */

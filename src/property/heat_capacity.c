@@ -77,7 +77,7 @@ heat_of_gas (struct property_tables *tables, const struct composition *gas, doub
   double most = 0;
   if (!(isfinite (T) && T > 0))
     return fault_set (fault, MESSAGE_RANGE, "an absolute temperature is above zero", NULL);
-  const struct figures *figures = property_tables_read (tables, PROPERTY_CP_IDEAL, COLUMNS,
+  const struct figures *figures = property_tables_read (tables, PROPERTY_TABLE_CP_IDEAL, COLUMNS,
                                                         columns, fault);
   if (figures == NULL || !figures_cover (figures, gas, fault))
     return false;

@@ -128,7 +128,7 @@ viscosity_of_gas (struct property_tables *tables, const struct composition *gas,
   struct viscosity found = { .lowest = 0, .highest = HUGE_VAL };
   if (!(isfinite (T) && T > 0))
     return fault_set (fault, MESSAGE_RANGE, "an absolute temperature is above zero", NULL);
-  const struct figures *figures = property_tables_read (tables, PROPERTY_VISCOSITY, COLUMNS,
+  const struct figures *figures = property_tables_read (tables, PROPERTY_TABLE_VISCOSITY, COLUMNS,
                                                         columns, fault);
   if (figures == NULL || !figures_cover (figures, gas, fault))
     return false;

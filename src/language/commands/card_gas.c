@@ -7,8 +7,10 @@
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/wording.h"
+#include "property/calorific.h"
 #include "result/result.h"
 #include "support/arena.h"
+#include "support/fault.h"
 #include "units/constants.h"
 
 static void
@@ -63,17 +65,54 @@ kind_text (struct session *session, struct arena *arena, const struct compositio
                        gas->count == 1 ? "" : "s");
 }
 
-/* Molar mass of dry air, kg/mol, over which a relative density is taken (ISO 6976:2016).  */
-#define AIR_MOLAR_MASS 28.96546e-3
+/* A calorific figure at the conditions of Sm3, ideal; "" where there is none.  */
+static const char *
+heat_text (struct evaluation *ev, const struct composition *gas, int figure)
+{
+  struct heat_question q = { gas, UNSTATED, UNSTATED, false };
+  const char *basis;
+  double value;
+  ev->fault->kind = MESSAGE_NONE;
+  return heat_figure (ev, &q, figure, &value, &basis) && value > 0
+           ? figure_text (ev->arena, value / 1e6) : "";
+}
 
 static void
-molar_line (struct result *result, struct card *card, const struct composition *gas)
+heat_line (struct session *session, struct result *result, struct card *card,
+           const struct composition *gas)
+{
+  struct evaluation ev;
+  struct fault unheard;
+  fault_init (&unheard, result->arena);
+  evaluation_init (&ev, session, NULL, &unheard);
+  const char *gross = heat_text (&ev, gas, CALORIFIC_GROSS_VOLUME);
+  const char *net = heat_text (&ev, gas, CALORIFIC_NET_VOLUME);
+  const char *wobbe = heat_text (&ev, gas, CALORIFIC_WOBBE);
+  const struct settings *s = &session->settings;
+  if (*gross) {
+    card_add_line (result, card,
+                   arena_format (result->arena, "gross %s MJ/m3  .  net %s  .  wobbe %s  %s/%s degC, "
+                                 "ideal", gross, net, wobbe,
+                                 figure_text (result->arena, s->combustion - ICE_POINT),
+                                 figure_text (result->arena,
+                                              s->family[FAMILY_STANDARD].at.T - ICE_POINT)));
+  }
+}
+
+static void
+molar_line (struct session *session, struct result *result, struct card *card,
+            const struct composition *gas)
 {
   struct arena *arena = result->arena;
+  struct evaluation ev;
+  struct fault unheard;
+  fault_init (&unheard, arena);
+  evaluation_init (&ev, session, NULL, &unheard);
   card_add_line (result, card,
                  arena_format (arena, "molar mass %s g/mol  .  relative density %s, ideal",
                                figure_text (arena, gas->molar_mass * 1000),
-                               figure_text (arena, gas->molar_mass / AIR_MOLAR_MASS)));
+                               figure_text (arena,
+                                            gas->molar_mass / heat_air_molar_mass (&ev))));
 }
 
 /* All composition bases side by side.  */
@@ -97,7 +136,8 @@ closed_card (struct session *session, const struct gas_value *gas, const char *n
       cells[3].text = stated_as (session, result->arena, gas->list, c->species[i]);
     }
   }
-  molar_line (result, card, c);
+  molar_line (session, result, card, c);
+  heat_line (session, result, card, c);
 }
 
 /* An open gas: only what was stated, and how to close it.  */

@@ -46,6 +46,23 @@ add_row (struct evaluation *ev, struct card *card, const struct value *stream,
   return true;
 }
 
+/* The energy it carries, where it burns and that can be told.  */
+static void
+add_energy (struct evaluation *ev, struct card *card, const struct value *value, bool flow)
+{
+  static const struct row rows[2][2] = {
+    { { "energy", "MJ", WORD_GROSS }, { "energy", "MJ", WORD_NET } },
+    { { "energy", "MW", WORD_GROSS }, { "energy", "MW", WORD_NET } } };
+  struct fault unheard, *fault = ev->fault;
+  double H;
+  fault_init (&unheard, ev->arena);
+  ev->fault = &unheard;
+  if (heat_per_mole (ev, value->stream.gas, false, &H) && H > 0) {
+    (void) (add_row (ev, card, value, &rows[flow][0]) && add_row (ev, card, value, &rows[flow][1]));
+  }
+  ev->fault = fault;
+}
+
 static const char *
 parts_line (struct arena *arena, const struct composition *gas)
 {
@@ -102,6 +119,7 @@ card_of_stream (struct session *session, const struct stream *stream, const char
       && !add_row (&ev, card, &value, &actual[stream->flow ? 0 : 1])) {
     return false;
   }
+  add_energy (&ev, card, &value, stream->flow);
   card_add_line (result, card, state_line (result->arena, stream));
   card_add_line (result, card, parts_line (result->arena, stream->gas));
   return true;

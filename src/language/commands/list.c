@@ -134,7 +134,7 @@ setting_value (struct arena *arena, const struct settings *s, enum setting setti
   case SETTING_COMBUSTION:
     return temperature_text (arena, s->combustion, false);
   case SETTING_CALORIFIC_VALUES:
-    return "ISO 6976:2016";
+    return s->calorific_1995 ? "ISO 6976:1995" : "ISO 6976:2016";
   case SETTING_DIGITS:
     return arena_format (arena, "%d", s->digits);
   case SETTING_COUNT:
@@ -152,8 +152,7 @@ card_of_settings (struct session *session, const enum setting *one, struct resul
                                    blank);
   for (size_t i = 0; i < (size_t) SETTING_COUNT; i++) {
     enum setting setting = (enum setting) i;
-    if (one ? setting == *one
-            : setting != SETTING_COMBUSTION && setting != SETTING_CALORIFIC_VALUES) {
+    if (!one || setting == *one) {
       struct cell *cells = add_text_row (result, card, setting_name (setting),
                                          setting_value (result->arena, s, setting));
       cells[1].text = s->is_set[i] ? "as set" : "";

@@ -34,7 +34,7 @@ touch_of (enum setting setting)
   case SETTING_TOTAL_TOLERANCE: return TOUCH_TOLERANCE;
   case SETTING_BELOW_DETECTION: return TOUCH_BELOW;
   case SETTING_COMBUSTION:
-  case SETTING_CALORIFIC_VALUES:
+  case SETTING_CALORIFIC_VALUES: return TOUCH_COMBUSTION;
   case SETTING_DIGITS:
   case SETTING_COUNT: break;
   }
@@ -76,8 +76,9 @@ set_words (const struct statement *s, struct settings *new, struct fault *fault)
     *is_set = true;
     return true;
   case SETTING_CALORIFIC_VALUES:
-    return fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->setting_at, "calorific values",
-                         NULL);
+    new->calorific_1995 = strcmp (word, "ISO 6976:1995") == 0;
+    *is_set = new->calorific_1995;
+    return true;
   case SETTING_SITE_PRESSURE:
   case SETTING_SITE_ALTITUDE:
   case SETTING_OXYGEN_IN_AIR:
@@ -120,6 +121,18 @@ set_barometer (const struct statement *s, double si, struct settings *new, struc
   return true;
 }
 
+/* The temperatures at which ISO 6976 states calorific values.  */
+static bool
+is_combustion_temperature (double T)
+{
+  static const double tables[] = { 273.15, 288.15, 519.67 / 1.8, 293.15, 298.15 };
+  for (size_t i = 0; i < sizeof tables / sizeof tables[0]; i++)
+    if (fabs (T - tables[i]) <= 0.01) {
+      return true;
+    }
+  return false;
+}
+
 static bool
 set_figure (struct session *session, const struct statement *s, struct settings *new,
             struct fault *fault)
@@ -147,8 +160,9 @@ set_figure (struct session *session, const struct statement *s, struct settings 
     new->digits = (int) v.si;
     return true;
   case SETTING_COMBUSTION:
-    return fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->setting_at, "calorific values",
-                         NULL);
+    new->combustion = v.si;
+    return is_combustion_temperature (v.si)
+           || out_of_range (s, fault, "ISO 6976 knows 0, 15, 20, 25 degC and 60 degF");
   case SETTING_GAS_MODEL:
   case SETTING_REFERENCE_VOLUMES:
   case SETTING_BELOW_DETECTION:

@@ -383,10 +383,10 @@ made_once (void)
   SAME_TEXT (a->flags, "");
   CHECK (a->origin == SPECIES_FORMULA);
   CHECK (isnan (a->critical_temperature) && isnan (a->acentric_factor));
-  a = species_stated (table, "sales", 19.8e-3);
-  CHECK (a == species_stated (table, "sales", 19.8e-3));
-  CHECK (a != species_stated (table, "sales", 19.9e-3));
-  CHECK (a != species_stated (table, "other", 19.8e-3));
+  a = species_stated (table, "sales", &(struct stated_figures) { 19.8e-3, 0, 0 });
+  CHECK (a == species_stated (table, "sales", &(struct stated_figures) { 19.8e-3, 0, 0 }));
+  CHECK (a != species_stated (table, "sales", &(struct stated_figures) { 19.9e-3, 0, 0 }));
+  CHECK (a != species_stated (table, "other", &(struct stated_figures) { 19.8e-3, 0, 0 }));
   SAME_TEXT (a->key, "sales");
   NEAR (a->molar_mass, 19.8e-3, 1e-15);
   NEAR (species_atoms (a, "C"), 0, 1e-15);
