@@ -173,6 +173,9 @@ concentration (struct evaluation *ev, const struct node *part, const struct part
   return true;
 }
 
+/* In SI.  A greater one is no figure that the sums and shares of a list can be told with.  */
+static const double GREATEST_AMOUNT = 1e300;
+
 static bool
 stated_amount (struct evaluation *ev, const struct node *list, const struct node *part,
                const struct component *c, struct stated_part *out)
@@ -188,7 +191,7 @@ stated_amount (struct evaluation *ev, const struct node *list, const struct node
   if (f.si < 0) {
     return fault_set_at (ev->fault, MESSAGE_AMOUNT_NEGATIVE, part->a->at, part->text, NULL);
   }
-  if (!isfinite (f.si)) {
+  if (!(f.si <= GREATEST_AMOUNT)) {
     return fault_set_at (ev->fault, MESSAGE_NOT_FINITE, part->a->at, NULL, NULL);
   }
   out->amount = f.si;
