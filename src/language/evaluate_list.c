@@ -229,8 +229,8 @@ check_part (struct evaluation *ev, const struct node *list, const struct node *p
   struct place at = part->at;
   const struct species *water = ev->session->water;
   at.last = at.first + (int) strlen (part->text) - 1;
-  for (const struct stated_part *old = before; old < new; old++)
-    if (new->species && old->species == new->species) {
+  for (const struct stated_part *old = before; new->species && old < new; old++)
+    if (old->species == new->species) {
       return fault_set_at (ev->fault, MESSAGE_GAS_TWICE, at, new->species->key, NULL);
     }
   bool wet = new->species == water
