@@ -165,7 +165,9 @@ explain_unit (struct parser *p)
   /* gass raw = ...: no unit was meant behind the first word.  */
   bool second = p->token.at.line == p->second.line && p->token.at.first == p->second.first;
   const char *near = second ? statement_near (p, &p->first) : NULL;
-  if (near != NULL)
+  if (at_word (p, "deg"))
+    fault_hint (p->fault, "did you mean 'degC or degF'?");
+  else if (near != NULL)
     fault_hint (p->fault, "did you mean '%s %s'?", near, token_text (p, &p->token));
   return false;
 }
