@@ -50,6 +50,7 @@ include %D%/modules/result/files.mk
 include %D%/modules/language/files.mk
 include %D%/modules/report/files.mk
 include %D%/modules/shell/files.mk
+include %D%/fuzz/files.mk
 include %D%/renderings/files.mk
 include %D%/shell/files.mk
 include %D%/sessions/files.mk

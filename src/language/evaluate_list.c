@@ -173,6 +173,9 @@ concentration (struct evaluation *ev, const struct node *part, const struct part
   return true;
 }
 
+/* In SI.  A greater one is no figure that the sums and shares of a list can be told with.  */
+static const double GREATEST_AMOUNT = 1e300;
+
 static bool
 stated_amount (struct evaluation *ev, const struct node *list, const struct node *part,
                const struct component *c, struct stated_part *out)
@@ -188,7 +191,7 @@ stated_amount (struct evaluation *ev, const struct node *list, const struct node
   if (f.si < 0) {
     return fault_set_at (ev->fault, MESSAGE_AMOUNT_NEGATIVE, part->a->at, part->text, NULL);
   }
-  if (!isfinite (f.si)) {
+  if (!(f.si <= GREATEST_AMOUNT)) {
     return fault_set_at (ev->fault, MESSAGE_NOT_FINITE, part->a->at, NULL, NULL);
   }
   out->amount = f.si;
@@ -226,8 +229,8 @@ check_part (struct evaluation *ev, const struct node *list, const struct node *p
   struct place at = part->at;
   const struct species *water = ev->session->water;
   at.last = at.first + (int) strlen (part->text) - 1;
-  for (const struct stated_part *old = before; old < new; old++)
-    if (new->species && old->species == new->species) {
+  for (const struct stated_part *old = before; new->species && old < new; old++)
+    if (old->species == new->species) {
       return fault_set_at (ev->fault, MESSAGE_GAS_TWICE, at, new->species->key, NULL);
     }
   bool wet = new->species == water

@@ -132,9 +132,14 @@ missing_blanks (struct evaluation *ev, const char *name)
 static bool
 is_of_tables (struct evaluation *ev, const struct node *node)
 {
-  const char *name = node->text, *of = NULL;
-  if (known (ev->session, name, strlen (name)) && !name_find (ev->session, name, strlen (name))) {
-    of = "component";
+  const char *name = node->text, *of = NULL, *candidates;
+  size_t n = strlen (name);
+  const struct species *species;
+  enum species_match match = species_find (ev->session->vocabulary.species, name, n, &species,
+                                           &candidates);
+  if ((match == SPECIES_KEY || match == SPECIES_SYNONYM || air_is_name (name, n))
+      && !name_find (ev->session, name, n)) {
+    of = match == SPECIES_NONE ? "gas of the tables" : "component";
   }
   for (size_t i = 0; !of && i < reference_table_size (ev->session->references); i++)
     if (strcmp (reference_table_at (ev->session->references, i)->name, name) == 0) {

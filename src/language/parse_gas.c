@@ -118,7 +118,7 @@ parse_gas (struct parser *p, struct statement *statement)
   if (!expect_equals (p, FORM))
     return false;
   if (at_number (p))
-    return fail_here (p, MESSAGE_NAME_EXPECTED, "a part is NAME AMOUNT: CH4 60", NULL);
+    return fail_here (p, MESSAGE_NAME_EXPECTED, part_expected (p), NULL);
   if (at_list (p)) {
     statement->value = parse_list (p);
     return statement->value != NULL && expect_end (p, FORM);

@@ -55,11 +55,32 @@ fail_basis (struct parser *p, const struct unit *unit, struct place at)
   return false;
 }
 
+const char *
+part_expected (struct parser *p)
+{
+  /* 1-butene: the scanner reads a number.  */
+  const char *text = p->scan.text;
+  size_t end = p->token.end;
+  if (p->token.kind != TOKEN_NUMBER || end + 1 >= p->scan.n || text[end] != '-'
+      || !byte_is_letter (text[end + 1]))
+    return PART;
+  while (end < p->scan.n && strchr (" \t\n,;", text[end]) == NULL)
+    end++;
+  return arena_format (p->arena, "a name that begins with a digit stands in quotes: \"%s\"",
+                       bytes_text (p, p->token.start, end));
+}
+
 /* A word stands where the amount should: `CH4 x`, or a name of several words nobody knows.  */
 static bool
 fail_amount_word (struct parser *p, const struct node *name)
 {
   struct token next = token_behind (p);
+  if (p->token.kind == TOKEN_SIGN
+      && text_is_unit (p, arena_format (p->arena, "%s%%", name->text))) {
+    fail_here (p, MESSAGE_AMOUNT_MISSING, name->text, NULL);
+    fault_hint (p->fault, "no comma stands before the basis: CH4 60, CO2 40 %s%%", name->text);
+    return false;
+  }
   if (!opens_amount (p, &next) || p->token.kind != TOKEN_WORD)
     return fail_here (p, MESSAGE_AMOUNT_MISSING, name->text, NULL);
   const char *word = token_text (p, &p->token);
@@ -198,7 +219,7 @@ static bool
 parse_part (struct parser *p, struct list_reading *reading)
 {
   /* NAME amount [ UNIT ] { word }  */
-  struct node *name = parse_name (p, PART);
+  struct node *name = parse_name (p, part_expected (p));
   if (name == NULL)
     return false;
   struct node *part = node_new (p, NODE_PART, name->at);

@@ -88,6 +88,8 @@ bool joined_to_name (const struct parser *, const struct token *);
 
 /* Is it one of the words of the language that are not free?  */
 bool word_is_reserved (const char *text, size_t n);
+/* The statement word that the word is one slip away from; null: none.  */
+const char *statement_near (struct parser *, const struct token *);
 /* The word in small letters if that makes it a reserved word; null otherwise.  */
 const char *word_in_capitals (struct parser *, const struct token *);
 /* The kind of statement the token opens, or STATEMENT_EMPTY.  */
@@ -185,6 +187,8 @@ struct node *parse_value (struct parser *, const char *way_on);
 /* Does a list of parts begin with the token at hand?  */
 bool at_list (const struct parser *);
 struct node *parse_list (struct parser *);
+/* What is expected where a part is to begin.  */
+const char *part_expected (struct parser *);
 
 /* -- States and targets (parse_state.c, parse_target.c).  */
 

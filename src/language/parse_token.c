@@ -1,6 +1,8 @@
 #include "config.h"
 #include "language/parse_private.h"
 
+#include "support/text.h"
+
 void
 token_take (struct parser *p)
 {
@@ -151,6 +153,25 @@ statement_opened (const struct parser *p, const struct token *t)
           && memcmp (words[i].word.text, p->scan.text + t->start, n) == 0)
         return words[i].kind;
   return STATEMENT_EMPTY;
+}
+
+const char *
+statement_near (struct parser *p, const struct token *t)
+{
+  static const struct listed_word words[] = {
+#define STATEMENT(name, text, help) { text, sizeof text - 1 },
+#include "language/statements.def"
+#undef STATEMENT
+  };
+  enum { SHORTEST = 3, LONGEST = 12 };
+  size_t n = t->end - t->start;
+  if (t->kind != TOKEN_WORD || n < SHORTEST || n > LONGEST)
+    return NULL;
+  const char *word = token_text (p, t);
+  for (size_t i = 0; i < sizeof words / sizeof words[0]; i++)
+    if (text_distance (word, words[i].text, 1) <= 1)
+      return words[i].text;
+  return NULL;
 }
 
 unsigned

@@ -162,8 +162,13 @@ explain_unit (struct parser *p)
   const char *small = word_in_capitals (p, &p->token);
   if (small != NULL)
     return fail_instead (p, MESSAGE_WORD_CASE, p->token.at, token_text (p, &p->token), small);
+  /* gass raw = ...: no unit was meant behind the first word.  */
+  bool second = p->token.at.line == p->second.line && p->token.at.first == p->second.first;
+  const char *near = second ? statement_near (p, &p->first) : NULL;
   if (at_word (p, "deg"))
     fault_hint (p->fault, "did you mean 'degC or degF'?");
+  else if (near != NULL)
+    fault_hint (p->fault, "did you mean '%s %s'?", near, token_text (p, &p->token));
   return false;
 }
 

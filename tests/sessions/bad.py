@@ -56,6 +56,10 @@ class Entry:
         self.faults, self.figures, self.said = [], [], []
         self.objects = []
 
+    def waits(self):
+        """May one more statement of it answer?"""
+        return self.text.count(b";") + 1 > max(len(self.faults), len(self.objects))
+
     def lines(self):
         """How many physical lines."""
         return self.text.count(b"\n") + 1
@@ -157,10 +161,8 @@ def deal_out(every, out):
             thing["error"]["line"] += every[at].first - starts[at]
         else:
             statement = squeezed(thing["statement"].encode())
-            # A look at the definitions answers twice: list and set.
             places = [i for i in range(at, len(every))
-                      if statement in squeezed(every[i].text)
-                      and not (every[i].probe and len(every[i].objects) == 2)]
+                      if statement in squeezed(every[i].text) and every[i].waits()]
             if not places:
                 lost.append(text)
                 continue

@@ -1,5 +1,6 @@
 # Whole sessions through the program, read back by scripts in Python that speak TAP themselves.
 EXTRA_DIST += \
+  %D%/bad \
   %D%/contract.gw \
   %D%/scenarios \
   %D%/session.py \
@@ -9,6 +10,7 @@ EXTRA_DIST += \
   $(session_tests:.sh=.py)
 TESTS += $(session_tests)
 session_tests = \
+  %D%/bad.sh \
   %D%/contract.sh \
   %D%/figures.sh \
   %D%/refused.sh \
