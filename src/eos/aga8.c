@@ -13,6 +13,9 @@
 
 #include <math.h>
 
+#include "eos/caloric.h"
+#include "eos/gerg_table.h"
+
 /* Parameters of the mixture.  */
 struct conformal { double U, K3, G, Q, F; };
 
@@ -125,8 +128,10 @@ aga8_mix (const double x[], struct aga8_mixture *mixture)
   int present[AGA8_COUNT];
   int n = 0;
 
+  mixture->molar_mass = 0;
   for (int i = 0; i < AGA8_COUNT; i++) {
     mixture->x[i] = x[i];
+    mixture->molar_mass += x[i] * aga8_table.components[i].molar_mass;
     if (x[i] > 0) {
       present[n++] = i;
     }
@@ -181,6 +186,19 @@ aga8_set_isotherm (const void *mixture, double T, void *isotherm)
 }
 
 static void
+aga8_caloric (const void *memory, double T, double rho, struct caloric *caloric)
+{
+  const struct aga8_mixture *mixture = memory;
+  double x[GERG_COUNT] = { 0 };
+  const struct caloric_gas gas = { &mixture->residual, x, mixture->molar_mass };
+
+  for (int i = 0; i < AGA8_COUNT; i++) {
+    x[cover_find (&gerg_table.cover, aga8_table.components[i].key)] = mixture->x[i];
+  }
+  caloric_at (&gas, T, rho, caloric);
+}
+
+static void
 aga8_densities (const void *mixture, const struct state_list *states, double rho[])
 {
   helmholtz_densities (&((const struct aga8_mixture *) mixture)->residual, HELMHOLTZ_LANES_AVX512,
@@ -195,6 +213,7 @@ const struct equation equation_aga8_detail = {
   .lumped = aga8_lumped,
   .range = aga8_range,
   .uncertainty = aga8_uncertainty,
+  .caloric = aga8_caloric,
   .mixture_size = aga8_mixture_size,
   .prepare = aga8_prepare,
   .isotherm_size = sizeof (struct helmholtz_isotherm),

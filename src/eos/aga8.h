@@ -6,6 +6,7 @@
 
 struct aga8_mixture {
   double x[AGA8_COUNT];                    /* mol/mol, by the order of the table */
+  double molar_mass;                       /* kg/mol */
   struct helmholtz_mixture residual;
 };
 

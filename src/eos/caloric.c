@@ -1,11 +1,12 @@
-/* Caloric properties by GERG-2008: the relations of Kunz and Wagner (2012), table of the relations
-   of thermodynamic properties to the Helmholtz energy.                                          */
+/* Caloric properties from the Helmholtz energy: the relations of Kunz and Wagner (2012), table of
+   the relations of thermodynamic properties.  The ideal gas of GERG-2008 and of AGA8 DETAIL is the
+   same, that of Jaeschke and Schley (1995).                                                     */
 #include "config.h"
-#include "eos/gerg.h"
+#include "eos/caloric.h"
 
 #include <math.h>
 
-#include "eos/caloric.h"
+#include "eos/gerg_table.h"
 
 /* The heat capacities of the ideal gas were fitted with another gas constant (R*).  */
 static const double R_fitted = 8.31451;
@@ -39,9 +40,9 @@ add_vibration (double n, double y, bool is_sinh, struct ideal *sum)
 /* Without ln(rho/rho_0).  With r the ratio of R* to R, r (n2 + T0) - T0 takes the place of n2, as
    the state of no enthalpy is that of an ideal gas, whose p v has R.                            */
 static struct ideal
-ideal_of (const struct gerg_ideal *row, double T)
+ideal_of (const struct gerg_ideal *row, double R, double T)
 {
-  const double r = R_fitted / equation_gerg_2008.gas_constant;
+  const double r = R_fitted / R;
   const double n2 = (r * (row->n2 + T_zero) - T_zero) / r;
   struct ideal sum = {
     .a = row->n1 + n2 / T - (row->n[0] - 1) * log (T),
@@ -56,14 +57,14 @@ ideal_of (const struct gerg_ideal *row, double T)
 }
 
 static struct ideal
-ideal_mixture (const double x[], double T, double rho)
+ideal_mixture (const double x[], double R, double T, double rho)
 {
-  const double rho_zero = p_zero / (equation_gerg_2008.gas_constant * T_zero);
+  const double rho_zero = p_zero / (R * T_zero);
   struct ideal sum = { 0, 0, 0 };
 
   for (int i = 0; i < GERG_COUNT; i++) {
     if (x[i] > 0) {
-      const struct ideal one = ideal_of (&gerg_table.ideals[i], T);
+      const struct ideal one = ideal_of (&gerg_table.ideals[i], R, T);
       sum.a += x[i] * (one.a + log (x[i] * rho / rho_zero));
       sum.t += x[i] * one.t;
       sum.tt += x[i] * one.tt;
@@ -73,12 +74,11 @@ ideal_mixture (const double x[], double T, double rho)
 }
 
 void
-gerg_caloric (const void *memory, double T, double rho, struct caloric *out)
+caloric_at (const struct caloric_gas *gas, double T, double rho, struct caloric *out)
 {
-  const struct gerg_mixture *mixture = memory;
-  const struct helmholtz_full r = helmholtz_full_at (&mixture->residual, T, rho);
-  const struct ideal o = ideal_mixture (mixture->x, T, rho);
-  const double R = equation_gerg_2008.gas_constant;
+  const double R = gas->residual->gas_constant;
+  const struct helmholtz_full r = helmholtz_full_at (gas->residual, T, rho);
+  const struct ideal o = ideal_mixture (gas->x, R, T, rho);
   const double cv = -(o.tt + r.tt - r.t);                      /* over R, like what follows */
   const double by_rho = 1 + r.d + r.dd;                        /* dp/d(rho) over RT */
   const double by_T = 1 + r.d - r.dt;                          /* dp/dT over rho R */
@@ -86,14 +86,14 @@ gerg_caloric (const void *memory, double T, double rho, struct caloric *out)
 
   out->Z = 1 + r.d;
   out->pressure = rho * R * T * out->Z;
-  out->molar_mass = mixture->molar_mass;
+  out->molar_mass = gas->molar_mass;
   out->cv = R * cv;
   out->cp = R * (cv + by_T * by_T / by_rho);
   out->energy = R * T * (o.t + r.t);
   out->enthalpy = out->energy + R * T * out->Z;
   out->entropy = R * (o.t + r.t - o.a - r.a);
   out->gibbs = out->enthalpy - T * out->entropy;
-  out->speed_of_sound = sqrt (R * T / mixture->molar_mass * stiffness);
+  out->speed_of_sound = sqrt (R * T / gas->molar_mass * stiffness);
   out->isentropic_exponent = stiffness / out->Z;
   out->joule_thomson = -(r.dd + r.dt) / (by_T * by_T + cv * by_rho) / (R * rho);
 }

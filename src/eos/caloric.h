@@ -15,4 +15,13 @@ struct caloric {
   double joule_thomson;                    /* (dT/dp)_h, K/Pa */
 };
 
+/* A mixture as the equations of reference have it: X by the order of gerg_table.h, kg/mol.  */
+struct helmholtz_mixture;
+struct caloric_gas {
+  const struct helmholtz_mixture *residual;
+  const double *x;
+  double molar_mass;
+};
+void caloric_at (const struct caloric_gas *, double T, double rho, struct caloric *);
+
 #endif

@@ -87,8 +87,8 @@ const char *gas_model_name (enum gas_model);             /* "auto", "ideal", "Pe
 /* The equation of a model; null for auto.  */
 const struct equation *gas_model_equation (enum gas_model);
 
-/* The choice for a composition at no state in particular: for auto Peng-Robinson, else the ideal gas
-   with *LACKING the key of the first species the better one lacks a constant of (null where
+/* The choice for a composition at no state in particular: for auto Peng-Robinson, else the ideal
+   gas with *LACKING the key of the first species the better one lacks a constant of (null where
    nothing is lacking).  For a named model its equation; null with the kind model-lacks (facts:
    model, species).                                                                              */
 const struct equation *equation_choose (enum gas_model, const struct composition *,
@@ -131,8 +131,8 @@ bool eos_solve_prepared (const struct eos_mixture *, double T, double p, struct 
    the processor can, within 1e-14 of what eos_solve_prepared gives: 0 where there is only a
    liquid, NAN where T or p is not positive or there is no root.                                 */
 void eos_densities (const struct eos_mixture *, const struct state_list *, double rho[]);
-/* Caloric properties (eos/caloric.h) of a mixture at T and a density in mol/m3, as eos_solve gives
-   it.  False where the equation has none.                                                       */
+/* Caloric properties (eos/caloric.h) of a mixture at T and a density above 0, as eos_solve gives it.
+   False where the equation has none.                                                            */
 bool eos_caloric (const struct eos_mixture *, double T, double rho, struct caloric *) MUST_CHECK;
 
 #endif

@@ -24,8 +24,8 @@ function eighths_of(value,   k) {
 function exponent_of(c, eta, epsilon, beta, gamma,   key, k1, k2) {
   k1 = c == 1 ? 8 : eighths_of(beta - 2 * eta * epsilon)
   k2 = c == 2 ? 8 : eighths_of(eta)
-  key = "{ " (c + 0) ", " (eta + 0) ", " (epsilon + 0) ", " (beta + 0) ", " (gamma + 0) ", " k1 ", " \
-    k2 ", " sprintf("%.17g", exp(beta * gamma - eta * epsilon * epsilon)) " }"
+  key = "{ " (c + 0) ", " (eta + 0) ", " (epsilon + 0) ", " (beta + 0) ", " (gamma + 0) ", " \
+    k1 ", " k2 ", " sprintf("%.17g", exp(beta * gamma - eta * epsilon * epsilon)) " }"
   if (!(key in exponent)) {
     exponent[key] = exponents
     exponent_text[exponents++] = key
@@ -136,7 +136,8 @@ name == "gerg_departure" {
     departure_first[functions++] = terms
   }
   term_n[terms] = $2
-  term_slot[terms++] = slot_of($5 + 0 == 0 && $7 + 0 == 0 ? 0 : exponent_of(0, $5, $6, $7, $8), $3, $4)
+  term_slot[terms++] = slot_of($5 + 0 == 0 && $7 + 0 == 0 ? 0 : exponent_of(0, $5, $6, $7, $8),
+                               $3, $4)
 }
 
 name == "gerg_pairs" {

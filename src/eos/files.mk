@@ -6,6 +6,7 @@ noinst_LIBRARIES += %D%/libeos.a
   %D%/aga8_range.c \
   %D%/aga8_table.c \
   %D%/aga8_table.h \
+  %D%/caloric.c \
   %D%/caloric.h \
   %D%/cover.c \
   %D%/cover.h \
@@ -14,7 +15,6 @@ noinst_LIBRARIES += %D%/libeos.a
   %D%/eos.h \
   %D%/gerg.c \
   %D%/gerg.h \
-  %D%/gerg_caloric.c \
   %D%/gerg_table.c \
   %D%/gerg_table.h \
   %D%/helmholtz.c \

@@ -14,6 +14,8 @@
 
 #include <math.h>
 
+#include "eos/caloric.h"
+
 /* Both sums over i < j are doubled, since the pair turned round gives the same.  */
 static void
 reduce (const double x[], const int present[], int n, struct helmholtz_mixture *mixture)
@@ -156,6 +158,15 @@ gerg_uncertainty (const void *mixture, double T, double p)
     return (double) NAN;
   }
   return T >= 250 && T <= 450 && p <= 35e6 ? best : further;
+}
+
+static void
+gerg_caloric (const void *memory, double T, double rho, struct caloric *caloric)
+{
+  const struct gerg_mixture *mixture = memory;
+  const struct caloric_gas gas = { &mixture->residual, mixture->x, mixture->molar_mass };
+
+  caloric_at (&gas, T, rho, caloric);
 }
 
 static void

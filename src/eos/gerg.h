@@ -13,7 +13,4 @@ struct gerg_mixture {
 /* Reducing functions and merged terms for the fractions X, which add up to 1.  */
 void gerg_mix (const double x[GERG_COUNT], struct gerg_mixture *);
 
-/* For struct equation.  */
-void gerg_caloric (const void *mixture, double T, double rho, struct caloric *);
-
 #endif

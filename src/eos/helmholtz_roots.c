@@ -17,10 +17,10 @@ enum { STEPS_FREE = 12, STEPS_BOUND = 100, STEPS_SPINODAL = 60,
 static const double step_last = 2e-6;
 static const double step_bound = 1e-14;
 
-/* The walk: the first stride over B rho_r, how strides grow, the largest in delta.  It ends at
-   `densest`, or behind a dense root beyond `liquid`.  Liquids at their triple points are at 3 to
-   3.7.                                                                                          */
-static const double stride_first = 0.1, growth = 1.3, stride = 0.05;
+/* The walk: the first stride over B rho_r, how strides grow, the largest and the least in delta.
+   It ends at `densest`, or behind a dense root beyond `liquid`.  Liquids at their triple points are
+   at 3 to 3.7.                                                                                  */
+static const double stride_first = 0.1, growth = 1.3, stride = 0.05, stride_least = 1e-30;
 static const double densest = HELMHOLTZ_DENSEST, liquid = 1.5;
 
 double
@@ -196,7 +196,7 @@ static struct density_roots
 roots_by_walk (const struct helmholtz_isotherm *line, double pi)
 {
   struct walk walk = { .last = { .delta = 0, .f = -pi, .slope = 1, .bend = 0 } };
-  double step = fmin (stride, stride_first / fabs (second_virial (line)));
+  double step = fmax (stride_least, fmin (stride, stride_first / fabs (second_virial (line))));
 
   while (walk.last.delta < densest && !(walk.roots.dense > liquid)) {
     const struct node next = node_at (line, walk.last.delta + step, pi);
