@@ -131,8 +131,8 @@ bool eos_solve_prepared (const struct eos_mixture *, double T, double p, struct 
    the processor can, within 1e-14 of what eos_solve_prepared gives: 0 where there is only a
    liquid, NAN where T or p is not positive or there is no root.                                 */
 void eos_densities (const struct eos_mixture *, const struct state_list *, double rho[]);
-/* Caloric properties (eos/caloric.h) of a mixture at T and a density above 0, as eos_solve gives it.
-   False where the equation has none.                                                            */
+/* Caloric properties (eos/caloric.h) of a mixture at T and a density above 0, as eos_solve gives
+   it.  False where the equation has none.                                                       */
 bool eos_caloric (const struct eos_mixture *, double T, double rho, struct caloric *) MUST_CHECK;
 
 #endif
