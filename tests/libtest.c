@@ -67,7 +67,7 @@ case_ends (const CU_pTest test, const CU_pSuite suite, const CU_pFailureRecord f
 static bool
 record (bool holds, const char *detail, const char *file, int line)
 {
-  char text[1600];
+  char text[4096];
   snprintf (text, sizeof text, "%s:%d: %s%s%s", file, line, detail,
             run.about[0] != '\0' ? "\nin " : "", run.about);
   CU_assertImplementation (holds, (unsigned int) line, text, file, "", CU_FALSE);
