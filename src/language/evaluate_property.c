@@ -66,7 +66,8 @@ by_volume (struct evaluation *ev, const struct property_question *q, struct valu
   double Vm, Z;
   const char *model;
   struct volume_question question = { q->gas, q->T, q->p, q->Z, q->ideal };
-  if (!property_needs (ev, q, true, true) || !actual_molar_volume (ev, &question, &Vm, &Z, &model)) {
+  if (!property_needs (ev, q, true, true)
+      || !actual_molar_volume (ev, &question, &Vm, &Z, &model)) {
     fault_place (ev->fault, q->node->at);
     return false;
   }
@@ -307,7 +308,8 @@ bool
 evaluate_property (struct evaluation *ev, const struct node *node, const struct state *state,
                    struct value *out)
 {
-  struct property_question q = { .property = node->a->property, .node = node, .T = UNSTATED, .p = UNSTATED,
+  struct property_question q = { .property = node->a->property, .node = node, .T = UNSTATED,
+                                 .p = UNSTATED,
                         .Z = UNSTATED };
   struct value of;
   if (!evaluate (ev, node->b, state, &of)) {

@@ -91,8 +91,8 @@ heat_line (struct session *session, struct result *result, struct card *card,
   const struct settings *s = &session->settings;
   if (*gross) {
     card_add_line (result, card,
-                   arena_format (result->arena, "gross %s MJ/m3  .  net %s  .  wobbe %s  %s/%s degC, "
-                                 "ideal", gross, net, wobbe,
+                   arena_format (result->arena, "gross %s MJ/m3  .  net %s  .  wobbe %s  %s/%s "
+                                 "degC, ideal", gross, net, wobbe,
                                  figure_text (result->arena, s->combustion - ICE_POINT),
                                  figure_text (result->arena,
                                               s->family[FAMILY_STANDARD].at.T - ICE_POINT)));
