@@ -64,7 +64,7 @@ static bool
 convert_temperature (struct conversion *c)
 {
   const struct value *v = c->value;
-  struct standing standing = { c->what, NULL, NULL };
+  struct standing standing = { c->what, NULL, v->basis };
   bool kelvin_like = fabs (c->unit->offset) < 1e-300;
   bool from_difference = v->measure.sort == UNIT_DIFFERENCE;
   bool to_difference = c->unit->sort == UNIT_DIFFERENCE;

@@ -54,7 +54,7 @@ property_needs (struct evaluation *ev, const struct property_question *q, bool T
   const char *name = property_text[q->property];
   fault_set_at (ev->fault, MESSAGE_STATE_MISSING, of->at, name, NULL);
   const char *unit = property_unit[q->property];
-  fault_hint (ev->fault, "%s of %s at %s%s%s", name, of->text ? of->text : "...",
+  fault_hint (ev->fault, "%s of %s at %s%s%s", name, of->kind == NODE_NAME ? of->text : "...",
               T && p ? "20 degC, 1 bar(a)" : p ? "1 bar(a)" : "20 degC", *unit ? " in " : "", unit);
   return false;
 }
@@ -229,7 +229,15 @@ own_figure (struct evaluation *ev, const struct property_question *q, const stru
     return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, q->node->b->at,
                          "only a stream has a temperature and a pressure of its own", NULL);
   }
-  return property_needs (ev, q, T, !T) && property_answer (ev, q, T ? q->T : q->p, out);
+  if (isnan (T ? q->T : q->p)) {
+    fault_set_at (ev->fault, MESSAGE_KIND_WRONG, q->node->b->at,
+                  T ? "the temperature of this stream is not stated"
+                    : "the pressure of this stream is not stated", NULL);
+    fault_hint (ev->fault, "state it behind the stream: at 20 degC, 1 bar(a); a blend has it when "
+                "all its parts have");
+    return false;
+  }
+  return property_answer (ev, q, T ? q->T : q->p, out);
 }
 
 static bool

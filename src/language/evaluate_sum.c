@@ -478,6 +478,26 @@ offer_unit (struct evaluation *ev, const struct node *node)
   fault_hint (ev->fault, "did you mean '%s %s'? no blanks inside a unit", node->a->figure, joined);
 }
 
+/* A calorific value that is calculated with is the one per volume, at the state said or that of
+   Sm3: so two have a ratio and a difference.                                                  */
+static bool
+settle_calorific (struct evaluation *ev, const struct node *node, struct value *v)
+{
+  if (v->kind != VALUE_CALORIFIC) {
+    return true;
+  }
+  struct heat_question q = { v->gas->closed, v->T, v->p, (v->words & WORD_REAL) != 0 };
+  struct value settled = value_number (UNSTATED);
+  settled.unit = v->unit;
+  settled.measure = measure_of_unit (v->unit);
+  if (!heat_figure (ev, &q, v->heat, &settled.si, &settled.basis)) {
+    fault_place (ev->fault, node->at);
+    return false;
+  }
+  *v = settled;
+  return true;
+}
+
 bool
 evaluate_sum (struct evaluation *ev, const struct node *node, struct value *out)
 {
@@ -490,6 +510,9 @@ evaluate_sum (struct evaluation *ev, const struct node *node, struct value *out)
   }
   if (!evaluate (ev, node->b, NULL, &b)) {
     offer_unit (ev, node);
+    return false;
+  }
+  if (!settle_calorific (ev, node->a, out) || !settle_calorific (ev, node->b, &b)) {
     return false;
   }
   return node->kind == NODE_ADD || node->kind == NODE_SUBTRACT ? add (ev, node, out, &b)

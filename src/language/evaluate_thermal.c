@@ -128,7 +128,7 @@ static void
 tell_flammable (struct evaluation *ev, const struct property_question *q,
                 const struct flammability *f)
 {
-  const char *name = q->node->b->text ? q->node->b->text : "the gas";
+  const char *name = q->node->b->kind == NODE_NAME ? q->node->b->text : "the gas";
   if (f->upper_is_bound) {
     note (ev, MESSAGE_NOTE_UPPER_IS_BOUND, NULL, NULL, NULL);
   }

@@ -43,7 +43,10 @@ split_stated (struct evaluation *ev, const struct composition *gas, bool net,
       continue;
     }
     if (!(H > 0)) {
-      return fault_set (ev->fault, MESSAGE_CALORIFIC_UNKNOWN, species->key, NULL);
+      fault_set (ev->fault, MESSAGE_CALORIFIC_UNKNOWN, species->key, NULL);
+      fault_hint (ev->fault, "state it: gas %s with molar mass ..., %s calorific value ...",
+                  species->key, net ? "net" : "gross");
+      return false;
     }
     burnt->share -= gas->fraction[i];
     burnt->stated += gas->fraction[i] * H;

@@ -8,6 +8,7 @@
 #include "gas/species.h"
 #include "language/wording.h"
 #include "property/calorific.h"
+#include "property/flammability.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -65,6 +66,9 @@ kind_text (struct session *session, struct arena *arena, const struct compositio
                        gas->count == 1 ? "" : "s");
 }
 
+/* J/m3; air has 81, of its traces of methane.  */
+#define WORTH_A_LINE 1e4
+
 /* A calorific figure at the conditions of Sm3, ideal; "" where there is none.  */
 static const char *
 heat_text (struct evaluation *ev, const struct composition *gas, int figure)
@@ -73,7 +77,7 @@ heat_text (struct evaluation *ev, const struct composition *gas, int figure)
   const char *basis;
   double value;
   ev->fault->kind = MESSAGE_NONE;
-  return heat_figure (ev, &q, figure, &value, &basis) && value > 0
+  return heat_figure (ev, &q, figure, &value, &basis) && value > WORTH_A_LINE
            ? figure_text (ev->arena, value / 1e6) : "";
 }
 
@@ -92,7 +96,7 @@ heat_line (struct session *session, struct result *result, struct card *card,
   if (*gross) {
     card_add_line (result, card,
                    arena_format (result->arena, "gross %s MJ/m3  .  net %s  .  wobbe %s  %s/%s "
-                                 "degC, ideal", gross, net, wobbe,
+                                 "degC, ideal", gross, *net ? net : "not stated", wobbe,
                                  figure_text (result->arena, s->combustion - ICE_POINT),
                                  figure_text (result->arena,
                                               s->family[FAMILY_STANDARD].at.T - ICE_POINT)));
@@ -113,6 +117,22 @@ molar_line (struct session *session, struct result *result, struct card *card,
                                figure_text (arena, gas->molar_mass * 1000),
                                figure_text (arena,
                                             gas->molar_mass / heat_air_molar_mass (&ev))));
+}
+
+/* Where it burns in air; nothing for a gas that does not.  */
+static void
+limits_line (struct result *result, struct card *card, const struct composition *gas)
+{
+  struct flammability f;
+  struct fault unheard;
+  struct arena *arena = result->arena;
+  fault_init (&unheard, arena);
+  if (flammability_of (gas, NULL, 0, &f, NULL, &unheard) && f.kind == FLAMMABLE_BETWEEN) {
+    card_add_line (result, card,
+                   arena_format (arena, "flammable in air from %s%s%s vol%%",
+                                 figure_text (arena, 100 * f.lower), isnan (f.upper) ? "" : " to ",
+                                 isnan (f.upper) ? "" : figure_text (arena, 100 * f.upper)));
+  }
 }
 
 /* All composition bases side by side.  */
@@ -138,6 +158,7 @@ closed_card (struct session *session, const struct gas_value *gas, const char *n
   }
   molar_line (session, result, card, c);
   heat_line (session, result, card, c);
+  limits_line (result, card, c);
 }
 
 /* An open gas: only what was stated, and how to close it.  */

@@ -23,6 +23,53 @@ card_add_figure (struct result *result, struct card *card, const char *name, dou
   }
 }
 
+static const char *const property_name[] = {
+#define PROPERTY(name, text, unit, help) text,
+#include "language/properties.def"
+#undef PROPERTY
+};
+
+void
+card_add_property (struct session *session, struct result *result, struct card *card,
+                   const char *name, enum property property)
+{
+  struct node of = { .kind = NODE_OF, .at = { 1, 1, 1 } };
+  struct node what = { .kind = NODE_PROPERTY, .property = property, .at = of.at };
+  struct node whose = { .kind = NODE_NAME, .text = name, .at = of.at };
+  struct evaluation ev;
+  struct fault unheard;
+  struct figures figures = { NULL, 0, 0 };
+  struct subject subject = { property_name[property], of.at };
+  struct value value;
+  of.a = &what;
+  of.b = &whose;
+  fault_init (&unheard, result->arena);
+  evaluation_init (&ev, session, NULL, &unheard);
+  if (!evaluate_property (&ev, &of, NULL, &value)
+      || !convert_value (&ev, &value, NULL, &subject, &figures)) {
+    return;
+  }
+  for (size_t i = 0; i < figures.count; i++) {
+    const struct figure *f = &figures.at[i];
+    card_add_figure (result, card, f->what, f->value, f->unit_text, f->basis);
+  }
+}
+
+/* What a gas is like at the state of a stream.  */
+static void
+add_properties (struct session *session, struct result *result, struct card *card, bool wet)
+{
+  static const enum property shown[] = { PROPERTY_DENSITY, PROPERTY_CP, PROPERTY_KAPPA,
+                                         PROPERTY_SPEED_OF_SOUND, PROPERTY_VISCOSITY };
+  for (size_t i = 0; i < sizeof shown / sizeof shown[0]; i++) {
+    card_add_property (session, result, card, card->title, shown[i]);
+  }
+  if (wet) {
+    card_add_property (session, result, card, card->title, PROPERTY_WATER_DEW_POINT);
+    card_add_property (session, result, card, card->title, PROPERTY_RELATIVE_HUMIDITY);
+  }
+}
+
 /* A row of the card: the stream told in a unit, by the same code that answers questions.  */
 struct row { const char *name, *unit; unsigned words; };
 
@@ -120,6 +167,9 @@ card_of_stream (struct session *session, const struct stream *stream, const char
     return false;
   }
   add_energy (&ev, card, &value, stream->flow);
+  if (!isnan (stream->T) && !isnan (stream->p)) {
+    add_properties (session, result, card, wet);
+  }
   card_add_line (result, card, state_line (result->arena, stream));
   card_add_line (result, card, parts_line (result->arena, stream->gas));
   return true;
