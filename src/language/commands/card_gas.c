@@ -130,8 +130,8 @@ limits_line (struct result *result, struct card *card, const struct composition 
   if (flammability_of (gas, NULL, 0, &f, NULL, &unheard) && f.kind == FLAMMABLE_BETWEEN) {
     card_add_line (result, card,
                    arena_format (arena, "flammable in air from %s%s%s vol%%",
-                                 figure_text (arena, 100 * f.lower), isnan (f.upper) ? "" : " to ",
-                                 isnan (f.upper) ? "" : figure_text (arena, 100 * f.upper)));
+                                 rough_text (arena, 100 * f.lower), isnan (f.upper) ? "" : " to ",
+                                 isnan (f.upper) ? "" : rough_text (arena, 100 * f.upper)));
   }
 }
 
