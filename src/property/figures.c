@@ -80,6 +80,11 @@ figures_cover (const struct figures *figures, const struct composition *gas, str
   char what[40];
   snprintf (what, sizeof what, "the table %s", figures->table);
   fault_set (fault, MESSAGE_MODEL_LACKS, what, gas->species[worst]->key);
-  fault_hint (fault, "a row of your own in %s.tsv adds it (option --tables)", figures->table);
+  if (gas->species[worst]->origin == SPECIES_STATED) {
+    fault_hint (fault, "only what was stated of %s is known; its composition would do",
+                gas->species[worst]->key);
+  } else {
+    fault_hint (fault, "a row of your own in %s.tsv adds it (option --tables)", figures->table);
+  }
   return false;
 }

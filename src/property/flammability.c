@@ -208,8 +208,13 @@ flammability_of (const struct composition *gas, const struct flammable_limits st
   f.unknown_share = sum_total (&t.unknown);
   if (f.unknown_share > unknown_most * (f.fuel + f.unknown_share)) {
     fault_set (fault, MESSAGE_MODEL_LACKS, "the table flammability", f.unknown->key);
-    fault_hint (fault, "a row of your own in flammability.tsv, or in exposure.tsv without the "
-                "flag flammable, adds it (option --tables)");
+    if (f.unknown->origin == SPECIES_STATED) {
+      fault_hint (fault, "only what was stated of %s is known; its composition would do",
+                  f.unknown->key);
+    } else {
+      fault_hint (fault, "a row of your own in flammability.tsv, or in exposure.tsv without the "
+                  "flag flammable, adds it (option --tables)");
+    }
     return false;
   }
   if (f.fuel > 0)
