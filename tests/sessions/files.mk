@@ -12,6 +12,7 @@ TESTS += $(session_tests)
 session_tests = \
   %D%/bad.sh \
   %D%/contract.sh \
+  %D%/energy.sh \
   %D%/figures.sh \
   %D%/refused.sh \
   %D%/roundtrips.sh \
