@@ -40,6 +40,7 @@ type 12 kg \\\r
 see     | 
 type in mg\r
 see 12000000
+see gas | 
 type 12 kg in\x03
 see gas | 
 type 7 kg in zz\r
