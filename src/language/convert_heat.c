@@ -62,6 +62,11 @@ convert_calorific (struct conversion *c)
     return conversion_mismatch (c, "a calorific value is told per volume, mass or mole, a Wobbe "
                                 "index per volume");
   }
+  bool net = v->heat == CALORIFIC_NET_VOLUME || v->heat == CALORIFIC_NET_WOBBE;
+  if (c->words & (net ? WORD_GROSS : WORD_NET)) {
+    return conversion_mismatch (c, net ? "this figure is net: ask for the gross one by its name"
+                                       : "this figure is gross: ask for the net one by its name");
+  }
   /* To a molar or mass figure the metering is of no matter.  */
   struct heat_question q = { v->gas->closed, 288.15, STANDARD_ATMOSPHERE, false };
   struct standing standing = { c->what, NULL, NULL };

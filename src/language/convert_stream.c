@@ -87,8 +87,8 @@ convert_stream (struct conversion *c)
     return each_part (c, &part, stream.gas);
   }
   if (basis == FLOW_NONE) {
-    return conversion_mismatch (c, "a stream is told as a flow or an amount of mass, moles or "
-                                "volume, or as shares");
+    return conversion_mismatch (c, "a stream is told as a flow or an amount of mass, moles, "
+                                "volume or energy, or as shares");
   }
   if (flow != stream.flow) {
     return flow_mismatch (c, flow);

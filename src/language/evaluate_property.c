@@ -99,6 +99,7 @@ by_water (struct evaluation *ev, const struct property_question *q, struct value
     fault_place (ev->fault, q->node->at);
     return false;
   }
+  note_no_enhancement (ev, &ask, &moist);
   if (!property_answer (ev, q, moist.value, out)) {
     return false;
   }

@@ -143,6 +143,10 @@ struct moist_place { double T, p; const struct composition *gas; };
 /* The water fraction a state's moisture means; false with FAULT.  *Y is 0 for dry.  */
 bool state_water (struct evaluation *, const struct state *, const struct moist_place *,
                   double *y) MUST_CHECK;
+/* Notes why a figure of water in gas has no enhancement factor, where that moves it.  */
+struct moist_question; struct moist_answer;
+void note_no_enhancement (struct evaluation *, const struct moist_question *,
+                          const struct moist_answer *);
 /* The gas with the moisture of STATE (unchanged for MOISTURE_NONE) at its T, p or FALLBACK's. */
 bool state_wets (struct evaluation *, const struct state *, const struct stream *fallback,
                  const struct composition **, struct place at) MUST_CHECK;

@@ -305,13 +305,15 @@ beyond_saturation (struct evaluation *ev, const struct state *state, double T)
   return why && !fault_set_at (ev->fault, MESSAGE_RANGE, state->at, why, NULL);
 }
 
-static void
-note_enhancement (struct evaluation *ev, const struct moist_answer *a)
+void
+note_no_enhancement (struct evaluation *ev, const struct moist_question *q,
+                     const struct moist_answer *a)
 {
-  if (a->applied == ENHANCEMENT_APPLIED) {
-    note (ev, MESSAGE_NOTE_ENHANCEMENT, figure_text (ev->arena, a->factor), NULL, NULL);
-  } else if (a->applied == ENHANCEMENT_BEYOND_T || a->applied == ENHANCEMENT_BEYOND_P) {
+  if (a->applied == ENHANCEMENT_BEYOND_T || a->applied == ENHANCEMENT_BEYOND_P) {
     note (ev, MESSAGE_NOTE_ENHANCEMENT_BEYOND, NULL, NULL, NULL);
+  } else if (!q->air && q->p > 1e6) {
+    /* In air the factor is 1.03 at 1 MPa and 20 degC (Greenspan 1976).  */
+    note (ev, MESSAGE_NOTE_ENHANCEMENT_OTHER, NULL, NULL, NULL);
   }
 }
 
@@ -345,7 +347,10 @@ state_water (struct evaluation *ev, const struct state *state, const struct mois
   evaluation_touch (ev, TOUCH_VAPOUR);
   *y = answer.value * ev->settings->vapour_factor;
   assume_vapour_pressure (ev, answer.psat, answer.phase == WATER_ICE);
-  note_enhancement (ev, &answer);
+  if (answer.applied == ENHANCEMENT_APPLIED) {
+    note (ev, MESSAGE_NOTE_ENHANCEMENT, figure_text (ev->arena, answer.factor), NULL, NULL);
+  }
+  note_no_enhancement (ev, &question, &answer);
   return true;
 }
 
