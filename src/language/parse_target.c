@@ -34,6 +34,18 @@ explain_target (struct parser *p)
   return false;
 }
 
+/* Is the unit one of energy, or of energy per flow, time or gas?  */
+static bool
+counts_energy (const struct unit *unit)
+{
+  struct dimension d = unit->dimension;
+  return unit->ratio == RATIO_ENERGY || dimension_equal (d, DIMENSION_ENERGY)
+         || dimension_equal (d, DIMENSION_POWER)
+         || dimension_equal (dimension_times (d, DIMENSION_MASS), DIMENSION_ENERGY)
+         || dimension_equal (dimension_times (d, DIMENSION_AMOUNT), DIMENSION_ENERGY)
+         || dimension_equal (dimension_times (d, DIMENSION_VOLUME), DIMENSION_ENERGY);
+}
+
 /* UNIT { word }  */
 static bool
 parse_target_unit (struct parser *p, struct target *target, struct unit_read *read)
@@ -46,7 +58,15 @@ parse_target_unit (struct parser *p, struct target *target, struct unit_read *re
   target->unit = read->unit;
   target->unit_text = read->text;
   target->at = read->at;
-  return parse_unit_words (p, &target->words);
+  struct parser words = *p;
+  if (!parse_unit_words (p, &target->words))
+    return false;
+  if ((target->words & (WORD_GROSS | WORD_NET)) == 0 || counts_energy (target->unit))
+    return true;
+  while ((word_bit (&words, &words.token) & (WORD_GROSS | WORD_NET)) == 0)
+    token_take (&words);
+  return fail (p, MESSAGE_WORD_PLACE, words.token.at, token_text (p, &words.token),
+               "gross and net are words for energy: in MW gross");
 }
 
 /* A word or a figure, behind the comma of a target without a state; false: something else.  */

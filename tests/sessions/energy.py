@@ -97,6 +97,8 @@ REFUSED = (
      "in MJ/MJ gross"),
     ("", "gross calorific value of CH4 in MJ/Nm3 net", "unit-mismatch", "this figure is gross"),
     ("", "net wobbe of CH4 in kWh/m3 gross", "unit-mismatch", "this figure is net"),
+    ("", "5 kg/h of CH4 in Nm3/h net", "word-place", "words for energy"),
+    ("", "density of CH4 at 20 degC, 1 bar(a) in kg/m3 gross", "word-place", "words for energy"),
     ("", "5 kg/h of CH4 in %RH", "unit-mismatch", "volume or energy"),
     ("", "5 MW gross of CO2", "range", "does not burn"),
     ("", "5 MW net of N2 in Nm3/h", "range", "does not burn"),
