@@ -76,6 +76,18 @@ tell_model (struct evaluation *ev, const struct eos_state *state)
   }
 }
 
+/* Why `auto` took the cubic equation.  */
+static void
+tell_fallback (struct evaluation *ev, const struct composition *gas)
+{
+  const char *missing;
+  if (equation_gerg_2008.covers (gas, &missing)) {
+    note (ev, MESSAGE_NOTE_MODEL_BEYOND, NULL, NULL, NULL);
+  } else {
+    note (ev, MESSAGE_NOTE_MODEL_INSTEAD, missing, NULL, NULL);
+  }
+}
+
 static void
 assume_choice (struct evaluation *ev, const struct eos_state *state, const char *lacking)
 {
@@ -117,6 +129,9 @@ model_molar_volume (struct evaluation *ev, const struct volume_question *q, doub
           figure_text (ev->arena, 100 * state.uncertainty), NULL);
   }
   tell_model (ev, &state);
+  if (wanted == GAS_MODEL_AUTO && equation == &equation_peng_robinson) {
+    tell_fallback (ev, q->gas);
+  }
   return true;
 }
 
