@@ -13,10 +13,11 @@
    2 k_ij x_i x_j sqrt(a_i a_j) for each of its pairs in the mixture: `prepare` would list those
    behind the components, `set_isotherm` sum over that list.                                     */
 #include "config.h"
-#include "eos/eos.h"
+#include "eos/cubic.h"
 
 #include <math.h>
 
+#include "eos/eos.h"
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "units/constants.h"
@@ -84,6 +85,26 @@ kappa_of (double w)
                     : 0.379642 + w * (1.48503 - w * (0.164423 - w * 0.016666));
 }
 
+struct cubic_pure
+cubic_pure_of (const struct species *s)
+{
+  const double RTc = GAS_CONSTANT * s->critical_temperature;
+  const double root_a = RTc * sqrt (OMEGA_A / s->critical_pressure);               /* eq. 9 */
+  const double kappa = kappa_of (s->acentric_factor);
+
+  return (struct cubic_pure) {
+    .b = OMEGA_B * RTc / s->critical_pressure,                                     /* eq. 10 */
+    .at_zero = root_a * (1 + kappa),
+    .slope = root_a * kappa / sqrt (s->critical_temperature),
+  };
+}
+
+double
+cubic_root_a (const struct cubic_pure *pure, double T)
+{
+  return fabs (pure->at_zero - pure->slope * sqrt (T));
+}
+
 static void
 cubic_prepare (const struct composition *composition, void *memory)
 {
@@ -92,15 +113,12 @@ cubic_prepare (const struct composition *composition, void *memory)
   mixture->b = 0;
   mixture->count = composition->count;
   for (size_t i = 0; i < composition->count; i++) {
-    const struct species *s = composition->species[i];
+    const struct cubic_pure pure = cubic_pure_of (composition->species[i]);
     const double x = composition->fraction[i];
-    const double RTc = GAS_CONSTANT * s->critical_temperature;
-    const double root_a = RTc * sqrt (OMEGA_A / s->critical_pressure);             /* eq. 9 */
-    const double kappa = kappa_of (s->acentric_factor);
 
-    mixture->components[i].at_zero = x * root_a * (1 + kappa);
-    mixture->components[i].slope = x * root_a * kappa / sqrt (s->critical_temperature);
-    mixture->b += x * OMEGA_B * RTc / s->critical_pressure;                   /* eqs. 10, 21 */
+    mixture->components[i].at_zero = x * pure.at_zero;
+    mixture->components[i].slope = x * pure.slope;
+    mixture->b += x * pure.b;                                                    /* eq. 21 */
   }
 }
 
@@ -244,6 +262,28 @@ cubic_roots (const void *isotherm, double p)
   roots.gas = p / (large * line->RT);
   roots.dense = lone ? 0 : p / (small * line->RT);
   return roots;
+}
+
+/* Eq. 19 with y = b rho: A/B = a/(bRT) = alpha, Z - B = Z (1 - y).  */
+bool
+cubic_fugacity_of (const struct cubic_fluid *fluid, bool dense, struct cubic_fugacity *fugacity)
+{
+  const double RT = GAS_CONSTANT * fluid->T, b = fluid->b;
+  const double a = fluid->root_a * fluid->root_a;
+  const struct isotherm line = { .RT = RT, .b = b, .a = a, .alpha = a / (b * RT) };
+  const struct density_roots roots = cubic_roots (&line, fluid->p);
+  const double rho = dense && roots.dense > 0 ? roots.dense : roots.gas;
+  const double y = b * rho;
+  const double logarithm = log1p (2 * SQRT2 * y / (1 + (1 - SQRT2) * y)) / (2 * SQRT2);
+
+  if (!(rho > 0)) {
+    return false;
+  }
+  fugacity->Z = fluid->p / (rho * RT);
+  fugacity->free = -log (fugacity->Z * (1 - y));
+  fugacity->by_b = (fugacity->Z - 1 + line.alpha * logarithm) / b;
+  fugacity->by_root_a = -2 * fluid->root_a / (b * RT) * logarithm;
+  return isfinite (fugacity->free) && isfinite (fugacity->by_b);
 }
 
 const struct equation equation_peng_robinson = {

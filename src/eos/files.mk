@@ -11,6 +11,9 @@ noinst_LIBRARIES += %D%/libeos.a
   %D%/cover.c \
   %D%/cover.h \
   %D%/cubic.c \
+  %D%/cubic.h \
+  %D%/dew_point.c \
+  %D%/dew_point.h \
   %D%/eos.c \
   %D%/eos.h \
   %D%/gerg.c \

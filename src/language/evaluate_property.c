@@ -279,6 +279,8 @@ dispatch (struct evaluation *ev, const struct property_question *q, const struct
   case PROPERTY_KAPPA:
   case PROPERTY_SPEED_OF_SOUND:
     return property_caloric (ev, q, out);
+  case PROPERTY_HYDROCARBON_DEW_POINT:
+    return property_dew_point (ev, q, out);
   case PROPERTY_VISCOSITY:
     return property_viscosity (ev, q, out);
   case PROPERTY_FLAMMABLE_LIMITS:

@@ -29,5 +29,8 @@ bool property_viscosity (struct evaluation *, const struct property_question *, 
   MUST_CHECK;
 bool property_flammable (struct evaluation *, const struct property_question *, struct value *)
   MUST_CHECK;
+/* Hydrocarbon dew point (evaluate_dew.c).  */
+bool property_dew_point (struct evaluation *, const struct property_question *, struct value *)
+  MUST_CHECK;
 
 #endif

@@ -24,6 +24,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/convert_stream.c \
   %D%/definition.c \
   %D%/evaluate.c \
+  %D%/evaluate_dew.c \
   %D%/evaluate_gas.c \
   %D%/evaluate_list.c \
   %D%/evaluate_of.c \

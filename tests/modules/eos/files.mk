@@ -11,6 +11,13 @@ suites += %D%/t_cubic
   %D%/t_cubic.c
 %C%_t_cubic_LDADD = $(with_eos)
 
+suites += %D%/t_dew_point
+%C%_t_dew_point_SOURCES = \
+  %D%/fluids.c \
+  %D%/fluids.h \
+  %D%/t_dew_point.c
+%C%_t_dew_point_LDADD = $(with_eos)
+
 suites += %D%/t_eos
 %C%_t_eos_SOURCES = \
   %D%/fluids.c \
