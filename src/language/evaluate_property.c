@@ -195,7 +195,7 @@ relative_density (struct evaluation *ev, const struct property_question *q, stru
     return false;
   }
   if (ev->describe) {
-    out->basis = real ? "real, compression factors of ISO 6976"
+    out->basis = real ? basis
                       : arena_format (ev->arena, "ideal gas, over dry air of %s g/mol",
                                       figure_text (ev->arena, air * 1000));
   }

@@ -105,6 +105,14 @@ known_figures (struct evaluation *ev, const struct heat_question *q,
   struct calorific_question ask = {
     .edition = edition (ev), .T_combustion = ev->settings->combustion, .T_metering = q->T,
     .p = q->p, .real = q->real };
+  for (size_t i = 0; i < gas->count; i++) {
+    if (gas->species[i]->origin == SPECIES_STATED) {
+      fault_set (ev->fault, MESSAGE_MODEL_LACKS, calorific_edition_name (edition (ev)),
+                 gas->species[i]->key);
+      fault_hint (ev->fault, "its compression factor was not stated: ask for ideal volumes");
+      return false;
+    }
+  }
   if (!read_tables (ev)
       || !calorific_compute (ev->session->calorific, gas, &ask, out, ev->fault)) {
     return false;
@@ -176,6 +184,10 @@ basis_text (struct evaluation *ev, const struct heat_question *q, int figure)
   const char *name = calorific_edition_name (edition (ev));
   const char *sort = is_net (figure) ? "net" : "gross";
   const char *burnt = temperature_text (ev->arena, ev->settings->combustion, false);
+  if (figure == CALORIFIC_RELATIVE_DENSITY) {
+    return arena_format (ev->arena, "%s, %s, real, %s", temperature_text (ev->arena, q->T, false),
+                         pressure_text (ev->arena, q->p, false), name);
+  }
   if (!volume) {
     return arena_format (ev->arena, "%s, combustion %s, %s", sort, burnt, name);
   }
