@@ -431,8 +431,8 @@ can_be_asked (const struct composition *gas, double p, struct fault *fault)
   }
   if (!equation_peng_robinson.covers (gas, &lacking)) {
     fault_set (fault, MESSAGE_MODEL_LACKS, equation_peng_robinson.name, lacking);
-    fault_hint (fault, "a dew point needs the critical point of every component: ask of the gas "
-                "without %s", lacking);
+    fault_hint (fault, "a dew point needs the critical point of every component; take %s for one "
+                "that has it", lacking);
     return false;
   }
   return true;

@@ -57,7 +57,7 @@ dew_of_hydrocarbons (struct evaluation *ev, const struct composition *gas, doubl
   const char *what = arena_format (ev->arena, "the first liquid, near %s, is mostly %s",
                                    temperature_text (ev->arena, dew->T, false), drop.main->key);
   fault_set (ev->fault, MESSAGE_NO_DEW_POINT, what, NULL);
-  fault_hint (ev->fault, "for the hydrocarbons alone ask of the gas without %s", drop.main->key);
+  fault_hint (ev->fault, "for the rest of it put ... without %s normalised", drop.main->key);
   return false;
 }
 
