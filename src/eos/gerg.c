@@ -145,16 +145,23 @@ gerg_range (const void *mixture, double T, double p)
    No. 8 (1994) counts as such (from memory).                                                    */
 static const double methane_least = 0.45;
 
+/* More carbon dioxide than 30 % or water than 0.5 % is beyond natural gas as ISO 20765-2 counts it
+   (from memory; of water it allows less).                                                       */
+static const double carbon_dioxide_most = 0.30, water_most = 0.005;
+
 /* Kunz and Wagner, section on uncertainties (from memory): density of natural gases to 0.1 % from
    250 to 450 K and to 35 MPa; elsewhere in the gas to 0.2 to 0.5 %; the larger is taken.        */
 static double
 gerg_uncertainty (const void *mixture, double T, double p)
 {
   static const double best = 0.001, further = 0.005;
+  const double *x = ((const struct gerg_mixture *) mixture)->x;
   const int methane = cover_find (&gerg_table.cover, "CH4");
+  const int carbon_dioxide = cover_find (&gerg_table.cover, "CO2");
+  const int water = cover_find (&gerg_table.cover, "H2O");
 
-  if (((const struct gerg_mixture *) mixture)->x[methane] < methane_least
-      || gerg_range (mixture, T, p) == EOS_RANGE_OUTSIDE) {
+  if (x[methane] < methane_least || x[carbon_dioxide] > carbon_dioxide_most
+      || x[water] > water_most || gerg_range (mixture, T, p) == EOS_RANGE_OUTSIDE) {
     return (double) NAN;
   }
   return T >= 250 && T <= 450 && p <= 35e6 ? best : further;

@@ -29,7 +29,7 @@ struct species {
   const char *source;                                   /* of the constants */
   const char *note;
   enum species_origin origin;
-  double stated_gross, stated_net;                      /* J/mol, of a SPECIES_STATED; 0: unstated */
+  double stated_gross, stated_net;                      /* J/mol, of SPECIES_STATED; 0: unstated */
 };
 
 /* What is known of a gas without a composition: kg/mol, and J/mol or 0.  */

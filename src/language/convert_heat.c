@@ -2,6 +2,7 @@
 #include "language/convert.h"
 
 #include <math.h>
+#include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/wording.h"
@@ -10,6 +11,19 @@
 #include "units/constants.h"
 
 /* ---- Calorific values ---- */
+
+/* A pressure has the dimension of energy per volume: the words of the unit tell them apart.  */
+static bool
+is_energy (const char *unit)
+{
+  static const char *const words[] = { "J", "Wh", "cal", "Btu", "BTU", "btu", "therm", "Dth", "erg",
+                                       "toe" };
+  for (size_t i = 0; i < sizeof words / sizeof words[0]; i++)
+    if (strstr (unit, words[i])) {
+      return true;
+    }
+  return false;
+}
 
 /* The figure by mole, mass or volume that the unit asks for; -1: none.  */
 static int
@@ -21,7 +35,7 @@ figure_for (const struct conversion *c, bool *by_volume)
   bool wobbe = heat == CALORIFIC_WOBBE || heat == CALORIFIC_NET_WOBBE;
   *by_volume = dimension_equal (dimension_times (d, DIMENSION_VOLUME), DIMENSION_ENERGY);
   if (*by_volume) {
-    return heat;
+    return is_energy (c->unit_text) ? heat : -1;
   }
   if (wobbe || c->unit->family_power != 0) {
     return -1;

@@ -92,7 +92,8 @@ by_water (struct evaluation *ev, const struct property_question *q, struct value
     return false;
   }
   struct moist_question ask = { humidity ? MOIST_HUMIDITY : MOIST_DEW_POINT, y, q->T, q->p,
-                                enhancement_is_for (q->gas) };
+                                enhancement_is_for (q->gas)
+                                && ev->settings->model != GAS_MODEL_IDEAL };
   struct moist_answer moist;
   bool done = moist_answer (&ask, &moist, NULL, ev->fault);
   if (!done) {

@@ -52,7 +52,7 @@ real_heats (struct evaluation *ev, const struct property_question *q,
     return ideal_heats (ev, q, h);
   }
   *h = (struct heats) { c.cp, c.cv, c.isentropic_exponent, c.speed_of_sound, equation->name };
-  if (state.lumped > 0) {
+  if (state.lumped > TRACES_WORTH_A_NOTE) {
     note (ev, MESSAGE_NOTE_MODEL_TRACES, equation->name, share_text (ev->arena, state.lumped),
           NULL);
   }

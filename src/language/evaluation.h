@@ -172,6 +172,9 @@ bool heat_per_mole (struct evaluation *, const struct composition *, bool net, d
 
 /* ---- Volumes (volume.c) ---- */
 
+/* Traces an equation lumps that deserve a note: the noble gases of air, 25 ppm, move nothing.  */
+#define TRACES_WORTH_A_NOTE 1e-4
+
 /* Volume of one mole at a family's conditions: ideal gas, or real by the gas model.  */
 bool family_molar_volume (struct evaluation *, enum reference_family, const struct composition *,
                           bool real, double *Vm) MUST_CHECK;

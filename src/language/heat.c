@@ -2,6 +2,7 @@
 #include "language/evaluation.h"
 
 #include <math.h>
+#include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/session_private.h"
@@ -92,7 +93,9 @@ note_origins (struct evaluation *ev, const struct composition *gas, unsigned ori
   for (size_t i = 0; i < gas->count; i++) {
     enum calorific_origin origin = calorific_origin (ev->session->calorific, edition (ev),
                                                      gas->species[i]);
-    if (origin != CALORIFIC_STANDARD) {
+    bool inert = origin == CALORIFIC_NO_FUEL
+                 && strcmp (gas->species[i]->flags, "simple-asphyxiant") == 0;
+    if (origin != CALORIFIC_STANDARD && !inert) {
       note (ev, said[origin], gas->species[i]->key, NULL, NULL);
     }
   }

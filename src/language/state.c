@@ -305,6 +305,17 @@ beyond_saturation (struct evaluation *ev, const struct state *state, double T)
   return why && !fault_set_at (ev->fault, MESSAGE_RANGE, state->at, why, NULL);
 }
 
+/* Air takes up more water than its partial pressure alone says, unless gases are to be ideal.  */
+static bool
+applies_enhancement (struct evaluation *ev, const struct composition *gas)
+{
+  bool air = gas && enhancement_is_for (gas);
+  if (air) {
+    evaluation_touch (ev, TOUCH_MODEL);
+  }
+  return air && ev->settings->model != GAS_MODEL_IDEAL;
+}
+
 void
 note_no_enhancement (struct evaluation *ev, const struct moist_question *q,
                      const struct moist_answer *a)
@@ -337,7 +348,7 @@ state_water (struct evaluation *ev, const struct state *state, const struct mois
     return false;
   }
   struct moist_question question = { asked[state->moisture], state->moist, at->T, at->p,
-                                     at->gas && enhancement_is_for (at->gas) };
+                                     applies_enhancement (ev, at->gas) };
   if (!moist_answer (&question, &answer, NULL, ev->fault)) {
     return false;
   }

@@ -55,9 +55,6 @@ note_condensation (struct evaluation *ev, const struct volume_question *q)
   }
 }
 
-/* The noble gases of air, 25 ppm, move no figure that is shown.  */
-#define TRACES_WORTH_A_NOTE 1e-4
-
 /* What the equation says of itself at the state: range, accuracy, what it left out.  */
 static void
 tell_model (struct evaluation *ev, const struct eos_state *state)

@@ -134,7 +134,8 @@ second_virial_of_gas (struct property_tables *tables, const struct composition *
   struct sum sum = { 0, 0 };
   if (!(isfinite (T) && T > 0))
     return fault_set (fault, MESSAGE_RANGE, "an absolute temperature is above zero", NULL);
-  const struct figures *figures = property_tables_read (tables, PROPERTY_TABLE_VIRIAL, TERMS, columns,
+  const struct figures *figures = property_tables_read (tables, PROPERTY_TABLE_VIRIAL, TERMS,
+                                                       columns,
                                                         fault);
   if (figures == NULL)
     return false;

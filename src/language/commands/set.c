@@ -64,8 +64,7 @@ set_words (const struct statement *s, struct settings *new, struct fault *fault)
         new->model = (enum gas_model) m;
       }
     *is_set = new->model != GAS_MODEL_AUTO;
-    return new->model == GAS_MODEL_AUTO || gas_model_equation (new->model)
-           || fault_set_at (fault, MESSAGE_MODEL_ABSENT, s->setting_at, word, NULL);
+    return true;
   case SETTING_REFERENCE_VOLUMES:
     new->real_volumes = strcmp (word, "real") == 0;
     *is_set = new->real_volumes;

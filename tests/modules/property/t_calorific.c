@@ -587,7 +587,8 @@ faults (void)
   ask = question (15, 15);
   refused (gas_of ("CH4 0.9999 SiH4 0.0001"), &ask, MESSAGE_CALORIFIC_UNKNOWN, "SiH4");
   refused (gas_of ("CH4 0.5 HCl 0.5"), &ask, MESSAGE_CALORIFIC_UNKNOWN, "HCl");
-  refused (composition_pure (arena, species_stated (species, "CH4", &(struct stated_figures) { 0.016, 0, 0 })), &ask,
+  const struct stated_figures stated = { 0.016, 0, 0 };
+  refused (composition_pure (arena, species_stated (species, "CH4", &stated)), &ask,
            MESSAGE_CALORIFIC_UNKNOWN, "CH4");
   ask.real = true;
   refused (gas_of ("nC10H22 1"), &ask, MESSAGE_RANGE,
