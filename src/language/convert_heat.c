@@ -86,7 +86,9 @@ convert_calorific (struct conversion *c)
   struct standing standing = { c->what, NULL, NULL };
   double value;
   if (by_volume) {
-    q.real = ((c->words | v->words) & WORD_REAL) != 0;
+    q.real = ((c->words | v->words) & WORD_REAL) != 0
+             || (c->ev->settings->real_volumes && !(c->words & WORD_IDEAL));
+    evaluation_touch (c->ev, TOUCH_VOLUMES);
     metering (c, &q);
   }
   if (!heat_figure (c->ev, &q, figure, &value, &standing.basis)) {

@@ -48,6 +48,9 @@ real_heats (struct evaluation *ev, const struct property_question *q,
   if (!eos_solve_prepared (mixture, q->T, q->p, &state, ev->fault)) {
     return false;
   }
+  if (q->gas->count == 1 && state.may_condense) {
+    return fault_set (ev->fault, MESSAGE_STATE_LIQUID, q->gas->species[0]->key, NULL);
+  }
   if (!eos_caloric (mixture, q->T, state.density, &c)) {
     return ideal_heats (ev, q, h);
   }

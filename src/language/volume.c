@@ -109,6 +109,10 @@ model_molar_volume (struct evaluation *ev, const struct volume_question *q, doub
   if (!equation || !eos_solve (equation, q->gas, q->T, q->p, &state, ev->fault)) {
     return false;
   }
+  if (q->gas->count == 1 && state.may_condense) {
+    /* Of a pure substance the comparison is exact: none of it is gas.  */
+    return fault_set (ev->fault, MESSAGE_STATE_LIQUID, q->gas->species[0]->key, NULL);
+  }
   *Z = state.Z;
   *Vm = 1 / state.density;
   *model = equation->name;
