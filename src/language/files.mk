@@ -1,8 +1,6 @@
 noinst_LIBRARIES += %D%/liblanguage.a
 
 %C%_liblanguage_a_SOURCES = \
-  %D%/ask.c \
-  %D%/assume.c \
   %D%/commands/card_gas.c \
   %D%/commands/card_stream.c \
   %D%/commands/card_table.c \
@@ -16,63 +14,65 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/commands/set.c \
   %D%/commands/show.c \
   %D%/commands/trim.c \
-  %D%/convert.c \
-  %D%/convert.h \
-  %D%/convert_heat.c \
-  %D%/convert_part.c \
-  %D%/convert_quantity.c \
-  %D%/convert_stream.c \
+  %D%/convert/convert.c \
+  %D%/convert/convert.h \
+  %D%/convert/convert_heat.c \
+  %D%/convert/convert_part.c \
+  %D%/convert/convert_quantity.c \
+  %D%/convert/convert_stream.c \
   %D%/definition.c \
-  %D%/evaluate.c \
-  %D%/evaluate_dew.c \
-  %D%/evaluate_gas.c \
-  %D%/evaluate_list.c \
-  %D%/evaluate_of.c \
-  %D%/evaluate_property.c \
-  %D%/evaluate_property.h \
-  %D%/evaluate_sum.c \
-  %D%/evaluate_thermal.c \
-  %D%/evaluation.h \
-  %D%/flow.c \
-  %D%/flow.h \
-  %D%/heat.c \
+  %D%/evaluate/ask.c \
+  %D%/evaluate/assume.c \
+  %D%/evaluate/evaluate.c \
+  %D%/evaluate/evaluate_dew.c \
+  %D%/evaluate/evaluate_gas.c \
+  %D%/evaluate/evaluate_list.c \
+  %D%/evaluate/evaluate_of.c \
+  %D%/evaluate/evaluate_property.c \
+  %D%/evaluate/evaluate_property.h \
+  %D%/evaluate/evaluate_sum.c \
+  %D%/evaluate/evaluate_thermal.c \
+  %D%/evaluate/evaluation.h \
+  %D%/evaluate/flow.c \
+  %D%/evaluate/flow.h \
+  %D%/evaluate/heat.c \
+  %D%/evaluate/state.c \
+  %D%/evaluate/value.c \
+  %D%/evaluate/value.h \
+  %D%/evaluate/volume.c \
+  %D%/evaluate/wording.c \
+  %D%/evaluate/wording.h \
   %D%/mentions.c \
   %D%/names.c \
-  %D%/parse.c \
   %D%/parse.h \
-  %D%/parse_block.c \
-  %D%/parse_change.c \
-  %D%/parse_fault.c \
-  %D%/parse_gas.c \
-  %D%/parse_list.c \
-  %D%/parse_name.c \
-  %D%/parse_private.h \
-  %D%/parse_quantity.c \
-  %D%/parse_set.c \
-  %D%/parse_state.c \
-  %D%/parse_statement.c \
-  %D%/parse_sum.c \
-  %D%/parse_target.c \
-  %D%/parse_token.c \
-  %D%/parse_trim.c \
-  %D%/parse_unit.c \
+  %D%/parse/parse.c \
+  %D%/parse/parse_block.c \
+  %D%/parse/parse_change.c \
+  %D%/parse/parse_fault.c \
+  %D%/parse/parse_gas.c \
+  %D%/parse/parse_list.c \
+  %D%/parse/parse_name.c \
+  %D%/parse/parse_private.h \
+  %D%/parse/parse_quantity.c \
+  %D%/parse/parse_set.c \
+  %D%/parse/parse_state.c \
+  %D%/parse/parse_statement.c \
+  %D%/parse/parse_sum.c \
+  %D%/parse/parse_target.c \
+  %D%/parse/parse_token.c \
+  %D%/parse/parse_trim.c \
+  %D%/parse/parse_unit.c \
+  %D%/parse/scan.c \
+  %D%/parse/scan.h \
   %D%/properties.def \
-  %D%/scan.c \
-  %D%/scan.h \
   %D%/session.c \
   %D%/session.h \
   %D%/session_private.h \
   %D%/settings.c \
   %D%/settings.def \
   %D%/settings.h \
-  %D%/state.c \
   %D%/statements.def \
   %D%/topics.def \
   %D%/tree.h \
   %D%/undo.c \
-  %D%/value.c \
-  %D%/value.h \
-  %D%/volume.c \
-  %D%/wording.c \
-  %D%/wording.h \
   %D%/words.def

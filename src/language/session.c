@@ -8,7 +8,7 @@
 #include "gas/reference.h"
 #include "gas/species.h"
 #include "language/commands/commands.h"
-#include "language/wording.h"
+#include "language/evaluate/wording.h"
 #include "property/calorific.h"
 #include "property/property_tables.h"
 #include "result/result.h"

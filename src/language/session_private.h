@@ -4,7 +4,7 @@
 
 #include <stdbool.h>
 #include <stddef.h>
-#include "language/evaluation.h"
+#include "language/evaluate/evaluation.h"
 #include "language/session.h"
 #include "support/check.h"
 

@@ -2,7 +2,7 @@
 #include "language/settings.h"
 
 #include <math.h>
-#include "language/value.h"
+#include "language/evaluate/value.h"
 #include "units/constants.h"
 
 /* The international pound-force per square inch, exact (NIST SP 811 (2008), App. B.8).  */

@@ -6,7 +6,7 @@
 #include "gas/analysis.h"
 #include "gas/composition.h"
 #include "gas/species.h"
-#include "language/wording.h"
+#include "language/evaluate/wording.h"
 #include "property/calorific.h"
 #include "property/flammability.h"
 #include "result/result.h"

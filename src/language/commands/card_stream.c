@@ -5,7 +5,7 @@
 #include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
-#include "language/wording.h"
+#include "language/evaluate/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"

@@ -2,7 +2,7 @@
 #include "language/commands/commands.h"
 
 #include <string.h>
-#include "language/wording.h"
+#include "language/evaluate/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"

@@ -6,7 +6,7 @@
 #include "gas/air.h"
 #include "gas/reference.h"
 #include "gas/species.h"
-#include "language/wording.h"
+#include "language/evaluate/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"

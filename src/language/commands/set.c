@@ -3,7 +3,7 @@
 
 #include <math.h>
 #include <string.h>
-#include "language/wording.h"
+#include "language/evaluate/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"

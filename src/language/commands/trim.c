@@ -5,7 +5,7 @@
 #include <gsl/gsl_linalg.h>
 #include <math.h>
 #include <string.h>
-#include "language/wording.h"
+#include "language/evaluate/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"

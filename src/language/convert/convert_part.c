@@ -1,0 +1,311 @@
+#include "config.h"
+#include "language/convert/convert.h"
+
+#include <math.h>
+#include <string.h>
+#include "gas/composition.h"
+#include "gas/species.h"
+#include "language/evaluate/flow.h"
+#include "language/evaluate/wording.h"
+#include "support/arena.h"
+
+/* The gas a component is in, as the target wants it counted.  */
+struct host {
+  const struct composition *gas;           /* dry if the target says so */
+  double share;                            /* mol of the component per mol of that gas */
+  struct stream state;                     /* T, p, Z of its own */
+};
+
+static bool
+host_of (struct conversion *c, struct host *host)
+{
+  const struct value *v = c->value;
+  const struct species *water = c->ev->session->water;
+  host->state = (struct stream) { .T = v->T, .p = v->p, .Z = UNSTATED };
+  if (v->of_stream) {
+    host->gas = v->stream.gas;
+    host->share = v->stream.moles > 0 ? v->moles / v->stream.moles
+                                      : composition_fraction (host->gas, v->species.at[0]);
+    host->state = v->stream;
+  } else {
+    host->gas = gas_composition (c->ev, v->gas, c->subject_at);
+    host->share = v->moles;
+  }
+  if (!host->gas) {
+    return false;
+  }
+  double y = composition_fraction (host->gas, water), y_target = y;
+  if (c->words & WORD_DRY) {
+    y_target = 0;
+  } else if (c->has_state && c->state.moisture != MOISTURE_NONE) {
+    double T = isnan (c->state.T) ? host->state.T : c->state.T;
+    double p = isnan (c->state.p) ? host->state.p : c->state.p;
+    if (!state_water (c->ev, &c->state, &(struct moist_place) { T, p, host->gas }, &y_target)) {
+      fault_place (c->ev->fault, c->at);
+      return false;
+    }
+  }
+  if (fabs (y_target - y) <= 1e-15) {
+    return true;
+  }
+  if (y >= 1) {
+    return fault_set_at (c->ev->fault, MESSAGE_ONLY_WATER, c->at, NULL, NULL);
+  }
+  host->share = v->species.at[0] == water ? (y_target > 0 ? y_target : host->share / (1 - y))
+                                          : host->share * (1 - y_target) / (1 - y);
+  host->gas = composition_wetted (c->ev->arena, host->gas, water, y_target, c->ev->fault);
+  fault_place (c->ev->fault, c->at);
+  return host->gas != NULL;
+}
+
+/* Oxygen of the gas, dry.  */
+static double
+dry_oxygen (struct conversion *c, const struct composition *gas)
+{
+  double y = composition_fraction (gas, c->ev->session->water);
+  return y < 1 ? composition_fraction (gas, c->ev->session->oxygen) / (1 - y) : 0;
+}
+
+static const char *
+with_oxygen (struct conversion *c, const char *basis)
+{
+  if (isnan (c->state.oxygen) || !c->ev->describe) {
+    return basis;
+  }
+  const char *oxygen = arena_format (c->ev->arena, "at %s %% O2",
+                                     figure_text (c->ev->arena, 100 * c->state.oxygen));
+  return basis ? arena_format (c->ev->arena, "%s, %s", basis, oxygen) : oxygen;
+}
+
+/* Mass per mole of what the component is counted as, all species of a peak together.  */
+static bool
+counted_mass (struct conversion *c, double *mass_per_mole, double *moles_per_mole)
+{
+  const struct value *v = c->value;
+  if (v->species.count == 1) {
+    double per, M;
+    if (!counted_as (c, v->species.at[0], &per, &M)) {
+      return false;
+    }
+    *mass_per_mole = per * M;
+    *moles_per_mole = per;
+    if (!c->counted_as && v->moles > 0) {
+      *mass_per_mole = v->mass / v->moles;
+    }
+    return true;
+  }
+  if (c->counted_as) {
+    return fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->counted_as->at,
+                         "only a single component can be counted as another", NULL);
+  }
+  *mass_per_mole = v->moles > 0 ? v->mass / v->moles : 0;
+  *moles_per_mole = 1;
+  return true;
+}
+
+/* vol% real: phi_i = x_i Z_i/sum x_k Z_k, Z of the unmixed parts (ISO 14912:2003).  */
+static bool
+real_volume_share (struct conversion *c, const struct host *host, double *phi)
+{
+  const struct value *v = c->value;
+  struct state at = c->state;
+  double sum = 0;
+  *phi = 0;
+  if (!c->has_state || isnan (at.T) || isnan (at.p)) {
+    struct conditions metering = c->ev->settings->family[FAMILY_STANDARD].at;
+    at.T = metering.T;
+    at.p = metering.p;
+    assume_family (c->ev, FAMILY_STANDARD);
+  }
+  for (size_t i = 0; i < host->gas->count; i++) {
+    const struct species *species = host->gas->species[i];
+    struct volume_question q = { composition_pure (c->ev->arena, species), at.T, at.p, UNSTATED,
+                                 false };
+    double Vm, Z;
+    const char *model;
+    if (!actual_molar_volume (c->ev, &q, &Vm, &Z, &model)) {
+      fault_place (c->ev->fault, c->at);
+      return false;
+    }
+    sum += host->gas->fraction[i] * Z;
+    for (size_t k = 0; k < v->species.count; k++) {
+      *phi += v->species.at[k] == species ? host->gas->fraction[i] * Z : 0;
+    }
+  }
+  *phi /= sum;
+  return true;
+}
+
+/* A share or a concentration of the component.  */
+static bool
+concentration (struct conversion *c)
+{
+  struct host host;
+  double factor, per_mass, per_moles;
+  if (c->ev->result && !(c->value->moles > 0)) {
+    note (c->ev, MESSAGE_NOTE_NONE_STATED, c->value->part, NULL, NULL);
+  }
+  if (!host_of (c, &host) || !counted_mass (c, &per_mass, &per_moles)
+      || !oxygen_factor (c, dry_oxygen (c, host.gas), c->what, &factor)) {
+    return false;
+  }
+  double x = host.share * factor;
+  struct standing standing = { c->what, c->ev->describe ? moisture_word (c->ev, host.gas) : NULL,
+                               with_oxygen (c, NULL) };
+  const struct unit *u = c->unit;
+  if (u->ratio == RATIO_MASS) {
+    return conversion_add (c, x * per_mass / host.gas->molar_mass, &standing);
+  }
+  if (u->ratio == RATIO_VOLUME && (c->words & WORD_REAL)) {
+    double phi;
+    return real_volume_share (c, &host, &phi) && conversion_add (c, phi * factor, &standing);
+  }
+  if (u->ratio == RATIO_ENERGY) {
+    return fault_set_at (c->ev->fault, MESSAGE_NOT_AVAILABLE, c->at, "calorific values", NULL);
+  }
+  if (u->ratio != RATIO_NONE) {
+    if (u->ratio == RATIO_VOLUME && !standing.basis) {
+      standing.basis = "ideal mixing: equal to mol% for a gas, not for a liquid";
+    }
+    return conversion_add (c, x * per_moles, &standing);
+  }
+  struct counted_volume volume;
+  if (!conversion_volume (c, host.gas, &host.state, &volume)) {
+    return false;
+  }
+  standing.basis = with_oxygen (c, volume.basis);
+  bool by_mass = dimension_equal (u->dimension, DIMENSION_DENSITY);
+  return conversion_add (c, x * (by_mass ? per_mass : per_moles) / volume.Vm, &standing);
+}
+
+/* A flow or an amount of the component.  */
+static bool
+partial_flow (struct conversion *c, enum flow_basis basis)
+{
+  const struct value *v = c->value;
+  double per_mass, per_moles;
+  struct standing standing = { c->what, NULL, NULL };
+  if (!isnan (c->state.oxygen)) {
+    return conversion_mismatch (c, "a reference oxygen belongs to a concentration");
+  }
+  if (!counted_mass (c, &per_mass, &per_moles)) {
+    return false;
+  }
+  if (basis == FLOW_MASS) {
+    return conversion_add (c, v->species.count == 1 ? v->moles * per_mass : v->mass, &standing);
+  }
+  if (basis == FLOW_MOLAR) {
+    return conversion_add (c, v->moles * per_moles, &standing);
+  }
+  struct counted_volume volume;
+  if (!conversion_volume (c, v->stream.gas, &v->stream, &volume)) {
+    return false;
+  }
+  standing.basis = volume.basis;
+  return conversion_add (c, v->moles * per_moles * volume.Vm, &standing);
+}
+
+bool
+convert_part (struct conversion *c)
+{
+  const struct value *v = c->value;
+  struct measure m = measure_of_unit (c->unit);
+  bool flow;
+  if (unit_is_concentration (c->unit)) {
+    return concentration (c);
+  }
+  enum flow_basis basis = flow_basis_of (&m, &flow);
+  if (basis == FLOW_NONE) {
+    return conversion_mismatch (c, "a component is told as a share, a concentration, or a flow of "
+                                "mass, moles or volume");
+  }
+  if (!v->of_stream) {
+    fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->at,
+                  "this is a component of a gas without an amount", NULL);
+    fault_hint (c->ev->fault, "%s of 1 %s of ...", v->part, c->unit_text);
+    return false;
+  }
+  if (flow != v->flow) {
+    return conversion_mismatch (c, flow ? "this is an amount, not a flow"
+                                        : "this is a flow, not an amount");
+  }
+  if (basis == FLOW_ENERGY) {
+    if (v->species.count != 1) {
+      return conversion_mismatch (c, "only a single component has an energy of its own");
+    }
+    return convert_energy (c, composition_pure (c->ev->arena, v->species.at[0]), v->moles);
+  }
+  return partial_flow (c, basis);
+}
+
+/* ---- Traces ---- */
+
+static bool
+trace_needs_gas (struct conversion *c)
+{
+  fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->at,
+                "a share by mass needs the gas the trace is in", NULL);
+  fault_hint (c->ev->fault, "... of %s within GAS in %s", c->value->part, c->unit_text);
+  return false;
+}
+
+static bool
+trace_oxygen (struct conversion *c, double *factor)
+{
+  const struct value *v = c->value;
+  *factor = 1;
+  if (isnan (c->state.oxygen)) {
+    return true;
+  }
+  if (isnan (v->oxygen)) {
+    fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->at,
+                  "the oxygen the figure was measured at is not said", NULL);
+    fault_hint (c->ev->fault, "... of %s at 5 %%O2 in ...", v->part);
+    return false;
+  }
+  return oxygen_factor (c, v->oxygen, c->what, factor);
+}
+
+bool
+convert_trace (struct conversion *c)
+{
+  const struct value *v = c->value;
+  const struct unit *u = c->unit;
+  struct standing standing = { c->what, NULL, with_oxygen (c, NULL) };
+  double per, M, factor;
+  if (!unit_is_concentration (u)) {
+    return conversion_mismatch (c, "a concentration is told as a share or per volume");
+  }
+  if (!counted_as (c, v->species.at[0], &per, &M) || !trace_oxygen (c, &factor)) {
+    return false;
+  }
+  double x = v->si * factor;
+  if (v->measure.ratio == RATIO_MASS) {
+    return u->ratio == RATIO_MASS
+             ? conversion_add (c, x * per * M / v->species.at[0]->molar_mass, &standing)
+             : trace_needs_gas (c);
+  }
+  const struct composition *host = NULL;
+  if (v->gas && !(host = gas_composition (c->ev, v->gas, c->subject_at))) {
+    return false;
+  }
+  if (u->ratio == RATIO_MASS) {
+    return host ? conversion_add (c, x * per * M / host->molar_mass, &standing)
+                : trace_needs_gas (c);
+  }
+  if (u->ratio == RATIO_ENERGY) {
+    return conversion_mismatch (c, "a concentration is told as a share or per volume");
+  }
+  if (u->ratio != RATIO_NONE) {
+    standing.basis = with_oxygen (c, "by amount: the same at any temperature and pressure");
+    return conversion_add (c, x * per, &standing);
+  }
+  struct stream own = { .T = v->T, .p = v->p, .Z = UNSTATED };
+  struct counted_volume volume;
+  if (!conversion_volume (c, host, &own, &volume)) {
+    return false;
+  }
+  standing.basis = with_oxygen (c, volume.basis);
+  bool by_mass = dimension_equal (u->dimension, DIMENSION_DENSITY);
+  return conversion_add (c, x * per * (by_mass ? M : 1) / volume.Vm, &standing);
+}

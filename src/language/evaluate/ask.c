@@ -1,0 +1,339 @@
+#include "config.h"
+#include "language/session_private.h"
+
+#include <math.h>
+#include <string.h>
+#include "gas/composition.h"
+#include "language/evaluate/wording.h"
+#include "result/result.h"
+#include "support/arena.h"
+#include "support/memory.h"
+#include "units/constants.h"
+
+/* ---- The figures ---- */
+
+/* What an expression is called in an answer: "raw" for 850 Nm3/h of raw.  */
+static const char *
+subject_text (const struct evaluation *ev, const struct statement *s, const struct node *node)
+{
+  struct arena *arena = ev->arena;
+  for (;;) {
+    if (node->kind == NODE_AT || node->kind == NODE_WITHIN) {
+      node = node->a;
+    } else if (node->kind == NODE_OF && node->a->kind == NODE_QUANTITY) {
+      node = node->b;
+    } else if (node->kind == NODE_THAT && ev->session->last_subject) {
+      return arena_string (arena, ev->session->last_subject);
+    } else {
+      return node_text (arena, s, node);
+    }
+  }
+}
+
+static bool
+figures_of (struct evaluation *ev, const struct statement *s, struct value *value,
+            struct figures *figures)
+{
+  if (!evaluate (ev, s->value, NULL, value)) {
+    fault_place (ev->fault, s->value->at);
+    return false;
+  }
+  struct subject subject = { ev->describe ? subject_text (ev, s, s->value) : "", s->value->at };
+  const struct target *target = s->targets;
+  do {
+    if (!convert_value (ev, value, target, &subject, figures)) {
+      fault_place (ev->fault, target ? target->at : s->value->at);
+      return false;
+    }
+    target = target ? target->next : NULL;
+  } while (target);
+  return true;
+}
+
+/* The same question once more, prepared by the caller; false if it cannot be answered so.  */
+static bool
+figures_again (struct evaluation *again, const struct statement *s, struct figures *figures)
+{
+  struct value value;
+  return figures_of (again, s, &value, figures);
+}
+
+/* ---- Uncertainty ---- */
+
+/* Adds up, for each figure, the squares of what moving each source does to it: half the
+   difference between the answers with the source one standard uncertainty up and down
+   (Kragten, Analyst 119 (1994) 2161; JCGM 100:2008, 5.1.3 note 2).                              */
+static bool
+add_source (const struct evaluation *ev, const struct statement *s, const struct spread *source,
+            double variance[], size_t count)
+{
+  struct figures moved[2] = { { NULL, 0, 0 }, { NULL, 0, 0 } };
+  struct settings settings = *ev->settings;
+  settings.ignore_total = true;
+  for (int i = 0; i < 2; i++) {
+    struct evaluation again;
+    struct fault fault;
+    fault_init (&fault, ev->arena);
+    evaluation_again (&again, ev, &fault);
+    again.settings = &settings;
+    again.overridden = 0;
+    again.moved = source;
+    again.moved_by = i ? -1 : 1;
+    if (!figures_again (&again, s, &moved[i])) {
+      return fault_set (ev->fault, fault.kind, fault.fact[0], fault.fact[1]);
+    }
+  }
+  for (size_t i = 0; i < count && i < moved[0].count && i < moved[1].count; i++) {
+    double half = 0.5 * (moved[0].at[i].value - moved[1].at[i].value);
+    variance[i] += half * half;
+  }
+  return true;
+}
+
+/* What moves by less does not depend on the source: the figures differ by rounding alone.  */
+#define ROUNDING 1e-12
+
+static bool
+uncertainties (const struct evaluation *ev, const struct statement *s, struct answer *answers,
+               size_t count)
+{
+  if (ev->source_count == 0) {
+    return true;
+  }
+  double *variance = ARENA_ARRAY (ev->arena, count, double);
+  for (size_t i = 0; i < ev->source_count; i++)
+    if (!add_source (ev, s, ev->sources[i], variance, count)) {
+      fault_place (ev->fault, s->value->at);
+      return false;
+    }
+  size_t i = 0;
+  for (struct answer *a = answers; a && i < count; a = a->next, i++) {
+    double u = sqrt (variance[i]);
+    a->uncertainty = u > ROUNDING * fabs (a->value) ? u : UNSTATED;
+  }
+  return true;
+}
+
+/* ---- What the usual alternative would do ---- */
+
+/* A small change, to see whether an answer depends on something at all.  */
+#define WHETHER_IT_MATTERS 1e-3
+
+struct other { struct settings settings; unsigned overridden; const char *name; };
+
+static void
+other_family (const struct assumption *a, struct other *o)
+{
+  /* The conditions most often meant instead: common practice, no source.  */
+  static const struct { double T; const char *name; } usual[FAMILY_COUNT] = {
+    [FAMILY_NORMAL] = { 288.15, "at 15 degC" },
+    [FAMILY_STANDARD] = { ICE_POINT, "at 0 degC" },
+    [FAMILY_SCF] = { 293.15, "at 68 degF" },
+    [FAMILY_SCCM] = { 298.15, "at 25 degC" },
+  };
+  o->settings.family[a->family].at.T = usual[a->family].T;
+  o->overridden = touch_family (a->family);
+  o->name = usual[a->family].name;
+}
+
+/* The settings under which the alternative to an assumption is tried.  */
+static bool
+other_of (struct arena *arena, const struct assumption *a, struct other *o)
+{
+  switch (a->alternative) {
+  case ALTERNATIVE_NONE:
+    return false;
+  case ALTERNATIVE_FAMILY:
+    other_family (a, o);
+    return true;
+  case ALTERNATIVE_SHIPPED: {
+    struct settings shipped;
+    settings_init (&shipped);
+    o->settings.family[a->family] = shipped.family[a->family];
+    o->overridden = touch_family (a->family);
+    o->name = arena_format (arena, "at %s", shipped.family[a->family].text);
+    return true;
+  }
+  case ALTERNATIVE_REAL:
+    o->settings.model = GAS_MODEL_AUTO;
+    o->overridden = TOUCH_MODEL;
+    o->name = "real gas";
+    return true;
+  case ALTERNATIVE_SITE:
+    o->overridden = TOUCH_SITE;
+    if (isnan (o->settings.site_altitude)) {
+      o->settings.site_pressure = 1e5;
+      o->name = "at 1 bar";
+    } else {
+      o->settings.site_pressure = STANDARD_ATMOSPHERE;
+      o->name = "at sea level, 1.01325 bar";
+    }
+    return true;
+  case ALTERNATIVE_IDEAL:
+    o->settings.model = GAS_MODEL_IDEAL;
+    o->overridden = TOUCH_MODEL;
+    o->name = "ideal gas";
+    return true;
+  case ALTERNATIVE_OXYGEN:
+    o->settings.oxygen_in_air = 0.21;
+    o->overridden = TOUCH_OXYGEN;
+    o->name = "at 21 mol%";
+    return true;
+  case ALTERNATIVE_BELOW:
+    o->settings.below = BELOW_LIMIT;
+    o->overridden = TOUCH_BELOW;
+    o->name = "at the limit";
+    return true;
+  case ALTERNATIVE_COMBUSTION:
+    o->settings.combustion = 298.15;
+    o->overridden = TOUCH_COMBUSTION;
+    o->name = "at 25 degC";
+    return true;
+  case ALTERNATIVE_BAROMETER:
+    o->settings.site_pressure *= 1 + WHETHER_IT_MATTERS;
+    o->overridden = TOUCH_SITE;
+    return true;
+  case ALTERNATIVE_VAPOUR:
+    o->settings.vapour_factor = 1 - WHETHER_IT_MATTERS;
+    o->overridden = TOUCH_VAPOUR;
+    return true;
+  case ALTERNATIVE_GAUGE:
+    o->settings.bare_is_gauge = true;
+    o->overridden = TOUCH_BARE;
+    o->name = "as gauge";
+    return true;
+  }
+  return false;
+}
+
+/* The largest relative change the alternative makes to any figure; UNSTATED: cannot be told.  */
+static double
+effect_of (const struct evaluation *ev, const struct statement *s, const struct figures *figures,
+           const struct other *other)
+{
+  struct evaluation again;
+  struct fault fault;
+  struct figures others = { NULL, 0, 0 };
+  double largest = 0;
+  fault_init (&fault, ev->arena);
+  evaluation_again (&again, ev, &fault);
+  again.settings = &other->settings;
+  again.overridden = other->overridden;
+  if (!figures_again (&again, s, &others) || others.count != figures->count) {
+    return UNSTATED;
+  }
+  for (size_t i = 0; i < others.count; i++) {
+    double base = figures->at[i].value, new = others.at[i].value;
+    double effect = fabs (base) > 0 ? new / base - 1 : UNSTATED;
+    largest = isnan (largest) || fabs (effect) > fabs (largest) ? effect : largest;
+  }
+  return largest;
+}
+
+/* Below this an alternative does not move the figure in any digit that is shown.  */
+#define NO_EFFECT 5e-8
+
+static void
+tell_assumption (struct evaluation *ev, const struct statement *s, const struct figures *figures,
+                 const struct assumption *a)
+{
+  struct other other = { *ev->settings, 0, NULL };
+  double effect = UNSTATED;
+  if (other_of (ev->arena, a, &other)) {
+    effect = effect_of (ev, s, figures, &other);
+    if (fabs (effect) < NO_EFFECT) {
+      return;
+    }
+  }
+  struct remark *remark = result_remark (ev->result, a->kind, a->fact[0], a->fact[1]);
+  remark->fact[2] = a->fact[2];
+  remark->fact[3] = a->fact[3];
+  remark->alternative = other.name;
+  remark->effect = other.name ? effect : UNSTATED;
+}
+
+/* ---- The answer ---- */
+
+static struct answer *
+add_answers (struct result *result, const struct figures *figures)
+{
+  struct answer *first = NULL;
+  for (size_t i = 0; i < figures->count; i++) {
+    const struct figure *f = &figures->at[i];
+    struct answer *a = result_answer (result);
+    a->what = f->what;
+    a->label = f->label;
+    a->named = f->named;
+    a->value = f->value;
+    a->unit = f->unit_text;
+    a->moisture = f->moisture;
+    a->basis = f->basis;
+    first = first ? first : a;
+  }
+  return first;
+}
+
+static void
+caution_value (struct evaluation *ev, const struct statement *s, const struct value *value)
+{
+  const struct node *made = tree_new_gas (s->value);
+  const struct composition *gas = NULL;
+  if (value->kind == VALUE_STREAM || (value->kind == VALUE_PART && value->of_stream)) {
+    gas = value->stream.gas;
+  } else if (value->kind == VALUE_GAS || value->kind == VALUE_PART) {
+    gas = value->gas->closed;
+  }
+  /* A sum of components makes no gas.  */
+  bool sum_of_parts = value->kind == VALUE_PART && made == s->value;
+  if (made && gas && !sum_of_parts) {
+    caution_gas (ev->result, gas, node_text (ev->arena, s, made));
+  }
+}
+
+/* `that` is what the last question asked about.  */
+static void
+keep_subject (struct session *session, const char *subject)
+{
+  size_t n = strlen (subject);
+  if (n + 1 > session->last_room) {
+    session->last_room = 2 * (n + 1);
+    session->last_subject = memory_resize (session->last_subject, session->last_room, 1);
+  }
+  memcpy (session->last_subject, subject, n + 1);
+  session->last_length = n;
+}
+
+static bool
+asks_for_that (const struct node *node)
+{
+  return node && (node->kind == NODE_THAT || asks_for_that (node->a) || asks_for_that (node->b));
+}
+
+bool
+ask (struct session *session, const struct statement *s, struct result *result,
+     struct fault *fault)
+{
+  struct evaluation ev;
+  struct value value;
+  struct figures figures = { NULL, 0, 0 };
+  evaluation_init (&ev, session, result, fault);
+  if (!figures_of (&ev, s, &value, &figures)) {
+    return false;
+  }
+  struct answer *answers = add_answers (result, &figures);
+  if (!uncertainties (&ev, s, answers, figures.count)) {
+    return false;
+  }
+  for (size_t i = 0; i < ev.assumption_count; i++) {
+    tell_assumption (&ev, s, &figures, &ev.assumptions[i]);
+  }
+  result_sort_taken (result);
+  caution_value (&ev, s, &value);
+  for (size_t i = 0; i < ev.used_count; i++) {
+    definition_tell (session, ev.used[i], false, result);
+  }
+  if (!asks_for_that (s->value)) {
+    keep_subject (session, node_text (ev.arena, s, s->value));
+  }
+  return true;
+}

@@ -1,0 +1,336 @@
+#include "config.h"
+#include "language/evaluate/evaluation.h"
+
+#include <math.h>
+#include <string.h>
+#include "gas/air.h"
+#include "gas/analysis.h"
+#include "gas/composition.h"
+#include "gas/species.h"
+#include "language/session_private.h"
+#include "language/evaluate/wording.h"
+#include "support/arena.h"
+
+/* ---- Which component a part is ---- */
+
+/* A peak that was not resolved: as air has its parts.  */
+static const struct composition *
+peak (struct evaluation *ev, const char *name)
+{
+  struct part parts[AIR_PEAK_PARTS];
+  size_t n = air_peak (ev->session->vocabulary.species, name, strlen (name), parts);
+  const struct composition *gas = n ? composition_make (ev->arena, n, parts, ev->fault) : NULL;
+  if (gas && ev->describe) {
+    const char *shares = "";
+    for (size_t i = 0; i < gas->count; i++)
+      shares = arena_format (ev->arena, "%s%s%s %s", shares, i ? ", " : "", gas->species[i]->key,
+                             figure_text (ev->arena, 100 * gas->fraction[i]));
+    evaluation_assume (ev, &(struct assumption) {
+        .kind = MESSAGE_TAKEN_PEAK,
+        .fact = { name, arena_format (ev->arena, "%s mol%%", shares) } });
+  }
+  return gas;
+}
+
+/* A part's name: a gas of the user's first, then the component table, then a peak.  */
+struct component { const struct species *species; const struct composition *gas; };
+
+static bool
+component_named (struct evaluation *ev, const struct node *name, struct component *out)
+{
+  struct session *s = ev->session;
+  size_t n = strlen (name->text);
+  const char *candidates;
+  struct definition *d = name_find (s, name->text, n);
+  *out = (struct component) { NULL, NULL };
+  if (d && d->kind == NAME_GAS) {
+    const struct value *value = definition_value (ev, d, name->at);
+    out->gas = value ? gas_composition (ev, value->gas, name->at) : NULL;
+    return out->gas != NULL;
+  }
+  if (air_is_name (name->text, n)) {
+    out->gas = s->air;
+    return true;
+  }
+  switch (species_find (s->vocabulary.species, name->text, n, &out->species, &candidates)) {
+  case SPECIES_KEY:
+  case SPECIES_SYNONYM:
+  case SPECIES_PLAIN_FORMULA:
+    note_species (ev, out->species);
+    return true;
+  case SPECIES_AMBIGUOUS:
+    if (!strchr (name->text, '+') || !(out->gas = peak (ev, name->text))) {
+      return fault_set_at (ev->fault, MESSAGE_NAME_OPEN, name->at, name->text, candidates);
+    }
+    return true;
+  case SPECIES_NONE:
+    break;
+  }
+  out->gas = peak (ev, name->text);
+  if (!out->gas && d) {
+    return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, name->at,
+                         arena_format (ev->arena, "'%s' is no gas", name->text), NULL);
+  }
+  return out->gas || name_unknown (ev, name);
+}
+
+bool
+species_named (struct evaluation *ev, const struct node *name, struct species_set *set)
+{
+  struct component c;
+  const struct species *species;
+  const char *candidates;
+  size_t n = strlen (name->text);
+  enum species_match match = species_find (ev->session->vocabulary.species, name->text, n,
+                                           &species, &candidates);
+  if (match == SPECIES_KEY || match == SPECIES_SYNONYM) {
+    set->at[0] = species;
+    set->count = 1;
+    return true;
+  }
+  if (air_is_name (name->text, n)) {
+    return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, name->at, "'air' is no component", NULL);
+  }
+  if (!component_named (ev, name, &c)) {
+    return false;
+  }
+  if (c.species) {
+    set->at[0] = c.species;
+    set->count = 1;
+    return true;
+  }
+  if (c.gas->count > SPECIES_SET_MOST) {
+    return fault_set_at (ev->fault, MESSAGE_RANGE, name->at, "a lump of too many components",
+                         NULL);
+  }
+  set->count = c.gas->count;
+  memcpy (set->at, c.gas->species, set->count * sizeof set->at[0]);
+  return true;
+}
+
+/* ---- How much of it ---- */
+
+/* A figure of a part in SI with the unit it is in.  */
+struct part_figure { double si; const struct unit *unit; };
+
+static bool
+part_figure (struct evaluation *ev, const struct node *part, const struct unit *basis,
+             struct part_figure *f)
+{
+  struct value v;
+  if (!evaluate_quantity (ev, part->a, &v)) {
+    return false;
+  }
+  f->unit = part->unit ? part->unit : v.unit ? v.unit : basis;
+  if (!f->unit) {
+    return fault_set_at (ev->fault, MESSAGE_BASIS_MISSING, part->a->at, NULL, NULL);
+  }
+  if (part->unit && v.unit) {
+    return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, part->unit_at,
+                         "the figure in brackets has its unit already", NULL);
+  }
+  f->si = v.unit ? v.si : unit_to_si (f->unit, v.si);
+  if (part->below) {
+    const double share[] = { [BELOW_ZERO] = 0, [BELOW_HALF] = 0.5, [BELOW_LIMIT] = 1 };
+    const char *const word[] = { [BELOW_ZERO] = "zero", [BELOW_HALF] = "half the limit",
+                                 [BELOW_LIMIT] = "the limit" };
+    f->si *= share[ev->settings->below];
+    evaluation_touch (ev, TOUCH_BELOW);
+    if (ev->describe && part->a->figure && !ev->settings->is_set[SETTING_BELOW_DETECTION]) {
+      evaluation_assume (ev, &(struct assumption) {
+          .kind = MESSAGE_TAKEN_BELOW_DETECTION, .alternative = ALTERNATIVE_BELOW,
+          .fact = { part->text, arena_format (ev->arena, "%s %s", part->a->figure,
+                                              f->unit->spelling),
+                    word[ev->settings->below] } });
+    }
+  }
+  return true;
+}
+
+/* A concentration per reference volume becomes a mole fraction in an ideal gas.  */
+static bool
+concentration (struct evaluation *ev, const struct node *part, const struct part_figure *f,
+               const struct component *c, struct stated_part *out)
+{
+  struct dimension d = f->unit->dimension;
+  bool by_mass = dimension_equal (d, DIMENSION_DENSITY);
+  double Vm, molar_mass = c->species ? c->species->molar_mass : c->gas->molar_mass;
+  if (!by_mass && !dimension_equal (d, DIMENSION_MOLAR_DENSITY)) {
+    return fault_set_at (ev->fault, MESSAGE_UNIT_MISMATCH, part->a->at,
+                         "an amount of a part is a share, a concentration, a mass or an amount",
+                         NULL);
+  }
+  if (f->unit->family_power != -1) {
+    fault_set_at (ev->fault, MESSAGE_STATE_MISSING, part->a->at, f->unit->spelling, NULL);
+    fault_hint (ev->fault, "count it at reference conditions: mg/Nm3, mg/Sm3");
+    return false;
+  }
+  if (!family_molar_volume (ev, f->unit->family, NULL, false, &Vm)) {
+    return false;
+  }
+  out->basis = AMOUNT_MOLAR_CONCENTRATION;
+  out->amount = by_mass ? f->si * Vm / molar_mass : f->si * Vm;
+  return true;
+}
+
+/* In SI.  A greater one is no figure that the sums and shares of a list can be told with.  */
+static const double GREATEST_AMOUNT = 1e300;
+
+static bool
+stated_amount (struct evaluation *ev, const struct node *list, const struct node *part,
+               const struct component *c, struct stated_part *out)
+{
+  struct part_figure f = { 0, NULL };
+  if (part->rest) {
+    out->basis = AMOUNT_REST;
+    return true;
+  }
+  if (!part_figure (ev, part, list->unit, &f)) {
+    return false;
+  }
+  if (f.si < 0) {
+    return fault_set_at (ev->fault, MESSAGE_AMOUNT_NEGATIVE, part->a->at, part->text, NULL);
+  }
+  if (!(f.si <= GREATEST_AMOUNT)) {
+    return fault_set_at (ev->fault, MESSAGE_NOT_FINITE, part->a->at, NULL, NULL);
+  }
+  out->amount = f.si;
+  switch (f.unit->ratio) {
+  case RATIO_MOLE:
+  case RATIO_VOLUME:
+    out->basis = AMOUNT_MOLE_FRACTION;
+    return true;
+  case RATIO_MASS:
+    out->basis = AMOUNT_MASS_FRACTION;
+    return true;
+  case RATIO_PLAIN:
+    return fault_set_at (ev->fault, MESSAGE_BASIS_MISSING, part->a->at, NULL, NULL);
+  case RATIO_ENERGY:
+  case RATIO_NONE:
+    break;
+  }
+  if (dimension_equal (f.unit->dimension, DIMENSION_MASS)) {
+    out->basis = AMOUNT_MASS;
+    return true;
+  }
+  if (dimension_equal (f.unit->dimension, DIMENSION_AMOUNT)) {
+    out->basis = AMOUNT_MOLES;
+    return true;
+  }
+  return concentration (ev, part, &f, c, out);
+}
+
+/* ---- The list ---- */
+
+static bool
+check_part (struct evaluation *ev, const struct node *list, const struct node *part,
+            const struct stated_part *before, const struct stated_part *new)
+{
+  struct place at = part->at;
+  const struct species *water = ev->session->water;
+  at.last = at.first + (int) strlen (part->text) - 1;
+  for (const struct stated_part *old = before; new->species && old < new; old++)
+    if (old->species == new->species) {
+      return fault_set_at (ev->fault, MESSAGE_GAS_TWICE, at, new->species->key, NULL);
+    }
+  bool wet = new->species == water
+             || (new->gas && composition_fraction (new->gas, water) > 0);
+  return !(wet && (list->words & WORD_DRY))
+         || fault_set_at (ev->fault, MESSAGE_GAS_WATER, at, NULL, NULL);
+}
+
+/* `vol% real`: the volumes of the unmixed parts at the conditions of Sm3, by their own Z
+   (ISO 14912:2003): x_i is in proportion to phi_i/Z_i.                                          */
+static bool
+from_real_volumes (struct evaluation *ev, const struct node *list, size_t n,
+                   struct stated_part *parts)
+{
+  double total = 0;
+  for (size_t i = 0; i < n; i++) {
+    if (parts[i].basis != AMOUNT_MOLE_FRACTION && parts[i].basis != AMOUNT_REST) {
+      return fault_set_at (ev->fault, MESSAGE_BASIS_MIXED, list->unit_at, "vol% real", NULL);
+    }
+    total += parts[i].basis == AMOUNT_REST ? 0 : parts[i].amount;
+  }
+  for (size_t i = 0; i < n; i++) {
+    double Vm;
+    const struct composition *pure = parts[i].gas
+                                       ? parts[i].gas
+                                       : composition_pure (ev->arena, parts[i].species);
+    if (!family_molar_volume (ev, FAMILY_STANDARD, pure, true, &Vm)) {
+      return false;
+    }
+    double phi = parts[i].basis == AMOUNT_REST ? 1 - total : parts[i].amount;
+    if (phi < 0) {
+      return fault_set_at (ev->fault, MESSAGE_GAS_TOTAL, list->at,
+                           arena_format (ev->arena, "%s vol%%",
+                                         figure_text (ev->arena, 100 * total)),
+                           NULL);
+    }
+    parts[i].basis = AMOUNT_MOLES;
+    parts[i].amount = phi / Vm;
+  }
+  return true;
+}
+
+static bool
+read_parts (struct evaluation *ev, const struct node *list, struct stated_part *parts)
+{
+  size_t n = 0;
+  for (const struct node *part = list->items; part; part = part->next, n++) {
+    struct component c;
+    struct node name = { .kind = NODE_NAME, .text = part->text, .at = part->at };
+    name.at.last = part->at.first + (int) strlen (part->text) - 1;
+    if (!component_named (ev, &name, &c)) {
+      return false;
+    }
+    parts[n] = (struct stated_part) { .species = c.species, .gas = c.gas };
+    if (!check_part (ev, list, part, parts, &parts[n])
+        || !stated_amount (ev, list, part, &c, &parts[n])) {
+      fault_place (ev->fault, part->at);
+      return false;
+    }
+  }
+  return true;
+}
+
+static const struct node *
+part_at (const struct node *list, size_t i)
+{
+  const struct node *part = list->items;
+  while (part && i-- > 0) {
+    part = part->next;
+  }
+  return part ? part : list;
+}
+
+bool
+evaluate_list (struct evaluation *ev, const struct node *list, struct value *out)
+{
+  size_t n = 0, at = 0;
+  for (const struct node *part = list->items; part; part = part->next) {
+    n++;
+  }
+  struct stated_part *parts = ARENA_ARRAY (ev->arena, n, struct stated_part);
+  if (!read_parts (ev, list, parts)) {
+    return false;
+  }
+  if ((list->words & WORD_REAL) && !from_real_volumes (ev, list, n, parts)) {
+    fault_place (ev->fault, list->at);
+    return false;
+  }
+  const struct analysis *analysis = analysis_make (ev->arena, n, parts,
+                                                   (list->words & WORD_DRY) != 0, &at, ev->fault);
+  if (!analysis) {
+    fault_place (ev->fault, part_at (list, at)->at);
+    return false;
+  }
+  struct gas_value named = { .name = ev->subject, .basis = list->unit, .list = list };
+  *out = value_number (UNSTATED);
+  out->kind = VALUE_GAS;
+  out->gas = gas_of_analysis (ev, analysis, &named);
+  if (analysis->whole == WHOLE_MASS) {
+    note (ev, MESSAGE_NOTE_BY_MASS, named.name ? named.name : "the list", NULL, NULL);
+  }
+  return out->gas != NULL;
+}

@@ -1,0 +1,192 @@
+#include "config.h"
+#include "language/evaluate/evaluate_property.h"
+
+#include <math.h>
+#include "eos/caloric.h"
+#include "eos/eos.h"
+#include "gas/composition.h"
+#include "gas/species.h"
+#include "language/session_private.h"
+#include "language/evaluate/wording.h"
+#include "property/flammability.h"
+#include "property/heat_capacity.h"
+#include "property/viscosity.h"
+#include "support/arena.h"
+#include "units/constants.h"
+
+/* ---- Heat capacity and what follows from it ---- */
+
+struct heats { double cp, cv, kappa, w; const char *how; };
+
+/* Of an ideal gas: cv = cp - R, kappa = cp/cv, w^2 = kappa R T/M.  */
+static bool
+ideal_heats (struct evaluation *ev, const struct property_question *q, struct heats *h)
+{
+  struct ideal_heat ideal;
+  if (!heat_of_gas (ev->session->properties, q->gas, q->T, &ideal, NULL, ev->fault)) {
+    return false;
+  }
+  h->cp = ideal.cp;
+  h->cv = ideal.cp - GAS_CONSTANT;
+  h->kappa = h->cp / h->cv;
+  h->w = sqrt (h->kappa * GAS_CONSTANT * q->T / q->gas->molar_mass);
+  h->how = "ideal gas, no effect of pressure";
+  if (ideal.outside) {
+    note (ev, MESSAGE_NOTE_BEYOND_RANGE, "heat capacity", ideal.outside->key, NULL);
+  }
+  return true;
+}
+
+/* By an equation of state that has an ideal-gas part of its own.  */
+static bool
+real_heats (struct evaluation *ev, const struct property_question *q,
+            const struct equation *equation, struct heats *h)
+{
+  struct eos_state state;
+  struct caloric c;
+  const struct eos_mixture *mixture = eos_prepare (ev->arena, equation, q->gas);
+  if (!eos_solve_prepared (mixture, q->T, q->p, &state, ev->fault)) {
+    return false;
+  }
+  if (q->gas->count == 1 && state.may_condense) {
+    return fault_set (ev->fault, MESSAGE_STATE_LIQUID, q->gas->species[0]->key, NULL);
+  }
+  if (!eos_caloric (mixture, q->T, state.density, &c)) {
+    return ideal_heats (ev, q, h);
+  }
+  *h = (struct heats) { c.cp, c.cv, c.isentropic_exponent, c.speed_of_sound, equation->name };
+  if (state.lumped > TRACES_WORTH_A_NOTE) {
+    note (ev, MESSAGE_NOTE_MODEL_TRACES, equation->name, share_text (ev->arena, state.lumped),
+          NULL);
+  }
+  if (state.range == EOS_RANGE_OUTSIDE) {
+    note (ev, MESSAGE_NOTE_MODEL_OUTSIDE, equation->name, NULL, NULL);
+  }
+  return true;
+}
+
+static bool
+heats_of (struct evaluation *ev, const struct property_question *q, struct heats *h)
+{
+  const char *lacking = NULL;
+  enum gas_model model = q->ideal ? GAS_MODEL_IDEAL : ev->settings->model;
+  evaluation_touch (ev, TOUCH_MODEL);
+  const struct equation *equation = equation_choose_at (model, q->gas, q->T, q->p, &lacking,
+                                                        ev->fault);
+  if (!equation) {
+    return false;
+  }
+  return equation->caloric ? real_heats (ev, q, equation, h) : ideal_heats (ev, q, h);
+}
+
+bool
+property_caloric (struct evaluation *ev, const struct property_question *q, struct value *out)
+{
+  struct heats h;
+  if (!property_needs (ev, q, true, true) || !heats_of (ev, q, &h)) {
+    fault_place (ev->fault, q->node->at);
+    return false;
+  }
+  double M = q->gas->molar_mass;
+  double si = q->property == PROPERTY_CP ? h.cp / M : q->property == PROPERTY_CV ? h.cv / M
+              : q->property == PROPERTY_KAPPA ? h.kappa : h.w;
+  if (!property_answer (ev, q, si, out)) {
+    return false;
+  }
+  if (ev->describe) {
+    out->basis = arena_format (ev->arena, "%s, %s, %s", temperature_text (ev->arena, q->T, false),
+                               pressure_text (ev->arena, q->p, false), h.how);
+  }
+  return true;
+}
+
+/* ---- Viscosity ---- */
+
+bool
+property_viscosity (struct evaluation *ev, const struct property_question *q, struct value *out)
+{
+  struct viscosity v;
+  if (!property_needs (ev, q, true, false)
+      || !viscosity_of_gas (ev->session->properties, q->gas, q->T, &v, NULL, ev->fault)) {
+    fault_place (ev->fault, q->node->at);
+    return false;
+  }
+  if (!property_answer (ev, q, v.value, out)) {
+    return false;
+  }
+  if (v.outside) {
+    note (ev, MESSAGE_NOTE_BEYOND_RANGE, "viscosity", v.outside->key, NULL);
+  }
+  if (ev->describe) {
+    out->basis = arena_format (ev->arena, "%s, low pressure%s",
+                               temperature_text (ev->arena, q->T, false),
+                               v.mixture ? ", mixed by Wilke's rule" : "");
+  }
+  return true;
+}
+
+/* ---- Flammable limits ---- */
+
+static void
+tell_flammable (struct evaluation *ev, const struct property_question *q,
+                const struct flammability *f)
+{
+  const char *name = q->node->b->kind == NODE_NAME ? q->node->b->text : "the gas";
+  if (f->upper_is_bound) {
+    note (ev, MESSAGE_NOTE_UPPER_IS_BOUND, NULL, NULL, NULL);
+  }
+  if (f->unknown) {
+    note (ev, MESSAGE_NOTE_FLAMMABLE_UNKNOWN, f->unknown->key,
+          share_text (ev->arena, f->unknown_share), NULL);
+  }
+  if (!isnan (f->least_oxygen)) {
+    note (ev, MESSAGE_NOTE_LEAST_OXYGEN, share_text (ev->arena, f->least_oxygen), NULL, NULL);
+  }
+  if (f->burns_as_it_is) {
+    note (ev, MESSAGE_CAUTION_BURNS_AS_IT_IS, name, NULL, NULL);
+  }
+  if (f->enriched || f->oxidiser) {
+    note (ev, MESSAGE_CAUTION_LIMITS_OXIDISER, name, NULL, NULL);
+  }
+  if (f->pyrophoric) {
+    note (ev, MESSAGE_CAUTION_PYROPHORIC, f->pyrophoric->key, name, NULL);
+  }
+  note (ev, MESSAGE_CAUTION_FLAMMABLE_LIMITS, NULL, NULL, NULL);
+}
+
+static bool
+does_not_burn (struct evaluation *ev, const struct property_question *q, enum flammable_kind kind)
+{
+  return fault_set_at (ev->fault, MESSAGE_RANGE, q->node->b->at,
+                       kind == FLAMMABLE_NOTHING
+                         ? "nothing in it burns in air"
+                         : "it holds too little fuel to burn with air in any proportion", NULL);
+}
+
+bool
+property_flammable (struct evaluation *ev, const struct property_question *q, struct value *out)
+{
+  struct flammability f;
+  if (!flammability_of (q->gas, NULL, 0, &f, NULL, ev->fault)) {
+    fault_place (ev->fault, q->node->b->at);
+    return false;
+  }
+  if (f.kind != FLAMMABLE_BETWEEN) {
+    return does_not_burn (ev, q, f.kind);
+  }
+  bool upper = q->property == PROPERTY_UPPER_FLAMMABLE_LIMIT;
+  if (upper && isnan (f.upper)) {
+    return fault_set_at (ev->fault, MESSAGE_RANGE, q->node->b->at,
+                         "no upper limit is published for it", NULL);
+  }
+  if (!property_answer (ev, q, upper ? f.upper : f.lower, out)) {
+    return false;
+  }
+  if (q->property == PROPERTY_FLAMMABLE_LIMITS) {
+    out->kind = VALUE_LIMITS;
+    out->upper = f.upper;
+  }
+  out->basis = "of the gas in air, near 20 degC and 1 atm, Le Chatelier";
+  tell_flammable (ev, q, &f);
+  return true;
+}

@@ -1,0 +1,187 @@
+/* Working an expression out.
+
+   Evaluation is a function of a tree, a session's definitions and settings; it changes nothing
+   but the caches of definitions.  The same answer can be worked out again under other settings or
+   with one uncertain figure moved: that is how the effect of an assumption and the uncertainty of
+   an answer are found (Kragten, Analyst 119 (1994) 2161; JCGM 100:2008, 5.1.3 note 2), with no
+   derivative anywhere.                                                                          */
+#ifndef LANGUAGE_EVALUATE_EVALUATION_H
+#define LANGUAGE_EVALUATE_EVALUATION_H
+
+#include <stdbool.h>
+#include <stddef.h>
+#include "language/settings.h"
+#include "language/tree.h"
+#include "language/evaluate/value.h"
+#include "support/check.h"
+#include "support/fault.h"
+
+struct arena; struct definition; struct result; struct session;
+
+/* A value tried in place of what a definition says.  */
+struct stand_in { const struct definition *definition; struct value value; };
+
+/* What an answer leaned on, as bits; the bits below FAMILY_COUNT are those of the families.  */
+enum touch { TOUCH_SITE = 1u << 8, TOUCH_MODEL = 1u << 9, TOUCH_OXYGEN = 1u << 10,
+             TOUCH_BELOW = 1u << 11, TOUCH_TOLERANCE = 1u << 12, TOUCH_BARE = 1u << 13,
+             TOUCH_VOLUMES = 1u << 14, TOUCH_QUANTITY = 1u << 15,
+             TOUCH_VAPOUR = 1u << 16, TOUCH_COMBUSTION = 1u << 17 };
+static inline unsigned touch_family (enum reference_family f) { return 1u << (unsigned) f; }
+
+/* What the usual alternative to an assumption is.  The last two have none that is usual: they are
+   tried only to see whether the assumption matters to the answer.                               */
+enum alternative { ALTERNATIVE_NONE, ALTERNATIVE_FAMILY, ALTERNATIVE_SHIPPED, ALTERNATIVE_SITE,
+                   ALTERNATIVE_IDEAL, ALTERNATIVE_REAL, ALTERNATIVE_OXYGEN, ALTERNATIVE_BELOW,
+                   ALTERNATIVE_GAUGE, ALTERNATIVE_COMBUSTION, ALTERNATIVE_BAROMETER,
+                   ALTERNATIVE_VAPOUR };
+
+/* Something taken because the user left it open.  */
+struct assumption {
+  enum message kind;
+  const char *fact[MESSAGE_FACTS];
+  enum alternative alternative;
+  enum reference_family family;
+};
+
+struct evaluation {
+  struct session *session;
+  struct arena *arena;
+  const struct settings *settings;
+  struct fault *fault;
+  struct result *result;                    /* where notes go; null: nowhere */
+  bool describe;                            /* false while only the figures are wanted */
+  const char *subject;                      /* the name being defined, for notes; or null */
+
+  unsigned overridden;                      /* settings that differ from the session's */
+  const struct stand_in *stand_ins;         /* values tried in place of definitions */
+  size_t stand_in_count;
+  const struct spread *moved;               /* the uncertain figure that is moved, or null */
+  double moved_by;                          /* by how many standard uncertainties */
+
+  unsigned touched;
+  size_t assumption_count, assumption_room, source_count, source_room, used_count, used_room;
+  struct assumption *assumptions;           /* what was taken, each once */
+  const struct spread **sources;            /* uncertain figures met, told apart by their address */
+  struct definition **used;                 /* definitions met, each once */
+};
+
+void evaluation_init (struct evaluation *, struct session *, struct result *, struct fault *);
+/* A second look at the same thing: same session and arena, no notes, FAULT of its own.  */
+void evaluation_again (struct evaluation *, const struct evaluation *first, struct fault *);
+
+void evaluation_touch (struct evaluation *, unsigned bits);
+/* Adds an assumption unless the same one is there.  */
+void evaluation_assume (struct evaluation *, const struct assumption *);
+void evaluation_source (struct evaluation *, const struct spread *);
+void evaluation_use (struct evaluation *, struct definition *);
+
+/* The figure of a quantity node moved, if it is the one to be moved; notes its source.  VALUE is
+   the figure in its unit; the spread's standard uncertainty is in the same unit.                */
+double evaluation_moved (struct evaluation *, const struct spread *, const struct unit *,
+                         double value);
+
+/* ---- Expressions (evaluate.c) ---- */
+
+struct state;
+
+/* STATE, if not null, is what stands behind `at` for the whole of NODE.  */
+bool evaluate (struct evaluation *, const struct node *, const struct state *,
+               struct value *) MUST_CHECK;
+/* A figure: a quantity or a plain number; kind-wrong otherwise.  */
+bool evaluate_quantity (struct evaluation *, const struct node *, struct value *) MUST_CHECK;
+/* What a name means.  With STATE as above.  */
+bool evaluate_name (struct evaluation *, const struct node *, const struct state *,
+                    struct value *) MUST_CHECK;
+bool evaluate_of (struct evaluation *, const struct node *, const struct state *,
+                  struct value *) MUST_CHECK;
+bool evaluate_sum (struct evaluation *, const struct node *, struct value *) MUST_CHECK;
+bool evaluate_property (struct evaluation *, const struct node *, const struct state *,
+                        struct value *) MUST_CHECK;
+
+/* ---- Gases (evaluate_gas.c, evaluate_list.c) ---- */
+
+bool evaluate_list (struct evaluation *, const struct node *, struct value *) MUST_CHECK;
+/* Postfix words on a gas or stream: normalised, dried, wetted, saturated, without.  */
+bool evaluate_change (struct evaluation *, const struct node *, struct value *) MUST_CHECK;
+bool evaluate_keeping (struct evaluation *, const struct node *, struct value *) MUST_CHECK;
+/* The closed composition of a gas; kind gas-open, at AT, with the ways to close it.  */
+const struct composition *gas_composition (struct evaluation *, const struct gas_value *,
+                                           struct place at) MUST_CHECK;
+const struct gas_value *gas_of_composition (struct evaluation *, const struct composition *,
+                                            const char *name) MUST_CHECK;
+/* What a gas's parts are, as stated, for its treatments.  */
+const struct analysis *gas_analysis (struct evaluation *, const struct gas_value *) MUST_CHECK;
+/* A gas from an analysis, closed if its total lets it be; NAMED says what notes call it.  */
+const struct gas_value *gas_of_analysis (struct evaluation *, const struct analysis *,
+                                         const struct gas_value *named) MUST_CHECK;
+/* The species a component's name stands for: one, or those of a peak not resolved (O2+Ar), or of
+   a lump that is a gas of the user's (C6+).  Kinds name-unknown, name-open, kind-wrong.         */
+bool species_named (struct evaluation *, const struct node *name, struct species_set *)
+  MUST_CHECK;
+
+/* ---- States (state.c) ---- */
+
+enum moisture_kind { MOISTURE_NONE, MOISTURE_DRY, MOISTURE_SATURATED, MOISTURE_HUMIDITY,
+                     MOISTURE_DEW_POINT, MOISTURE_FRACTION };
+
+/* What stands behind `at`; NAN where it says nothing.  */
+struct state {
+  double T, p, Z, oxygen;
+  enum moisture_kind moisture;
+  double moist;                             /* humidity, K, or mol/mol of the wet gas */
+  bool ideal, real;
+  struct place at, T_at, p_at;
+};
+/* A state that says nothing, standing AT.  */
+struct state state_empty (struct place at);
+bool evaluate_state (struct evaluation *, const struct node *, struct state *) MUST_CHECK;
+/* The share of water, of the wet gas, that a figure means: mol%, ppm or mg/Nm3.  */
+bool evaluate_water (struct evaluation *, const struct node *, double *y) MUST_CHECK;
+/* Where water is taken up: T, p and the gas that takes it (air has more, by its enhancement
+   factor; null: no air).                                                                        */
+struct moist_place { double T, p; const struct composition *gas; };
+/* The water fraction a state's moisture means; false with FAULT.  *Y is 0 for dry.  */
+bool state_water (struct evaluation *, const struct state *, const struct moist_place *,
+                  double *y) MUST_CHECK;
+/* Notes why a figure of water in gas has no enhancement factor, where that moves it.  */
+struct moist_question; struct moist_answer;
+void note_no_enhancement (struct evaluation *, const struct moist_question *,
+                          const struct moist_answer *);
+/* The gas with the moisture of STATE (unchanged for MOISTURE_NONE) at its T, p or FALLBACK's. */
+bool state_wets (struct evaluation *, const struct state *, const struct stream *fallback,
+                 const struct composition **, struct place at) MUST_CHECK;
+/* A stream brought to a state: T, p, Z replaced, moisture changed with the dry flow kept.  */
+bool state_apply (struct evaluation *, const struct state *, struct stream *, struct place at)
+  MUST_CHECK;
+/* An absolute pressure from a quantity; a bare unit is taken as absolute, and said so.  */
+bool quantity_pressure (struct evaluation *, const struct value *, const char *typed,
+                        double *p) MUST_CHECK;
+
+/* ---- Heat (heat.c) ---- */
+
+/* What is asked of a gas's calorific value: at metering T, p (NAN: the conditions of Sm3).  */
+struct heat_question { const struct composition *gas; double T, p; bool real; };
+/* A figure of enum calorific_figure; *BASIS says what stands behind it.  */
+bool heat_figure (struct evaluation *, const struct heat_question *, int figure, double *value,
+                  const char **basis) MUST_CHECK;
+/* Molar mass (kg/mol) of the dry air a relative density is taken over.  */
+double heat_air_molar_mass (struct evaluation *);
+/* Gross or net, J/mol.  */
+bool heat_per_mole (struct evaluation *, const struct composition *, bool net, double *H)
+  MUST_CHECK;
+
+/* ---- Volumes (volume.c) ---- */
+
+/* Traces an equation lumps that deserve a note: the noble gases of air, 25 ppm, move nothing.  */
+#define TRACES_WORTH_A_NOTE 1e-4
+
+/* Volume of one mole at a family's conditions: ideal gas, or real by the gas model.  */
+bool family_molar_volume (struct evaluation *, enum reference_family, const struct composition *,
+                          bool real, double *Vm) MUST_CHECK;
+/* Volume of one mole of GAS at T, p by the gas model in force, by Z if given, or ideal.  Assumes
+   and notes what it must.  *Z says what was used, *MODEL by what ("as given").                  */
+struct volume_question { const struct composition *gas; double T, p, Z; bool ideal; };
+bool actual_molar_volume (struct evaluation *, const struct volume_question *, double *Vm,
+                          double *Z, const char **model) MUST_CHECK;
+
+#endif

@@ -1,0 +1,237 @@
+#include "config.h"
+#include "language/evaluate/evaluation.h"
+
+#include <math.h>
+#include <string.h>
+#include "gas/composition.h"
+#include "gas/species.h"
+#include "language/session_private.h"
+#include "language/evaluate/wording.h"
+#include "property/calorific.h"
+#include "support/arena.h"
+#include "units/constants.h"
+
+/* A gas is burnt in two parts: what the standard or enthalpies of formation can tell, and gases
+   known only by stated figures, which bring their own.                                          */
+struct burnt {
+  const struct composition *known;         /* null: all of it is stated */
+  double share;                            /* mol of the known part per mol of gas */
+  double stated;                           /* gross or net of the rest, J per mol of gas */
+};
+
+static bool
+read_tables (struct evaluation *ev)
+{
+  struct session *s = ev->session;
+  if (!s->calorific) {
+    s->calorific = calorific_tables_create (s->options.tables, ev->fault);
+  }
+  return s->calorific != NULL;
+}
+
+static bool
+split_stated (struct evaluation *ev, const struct composition *gas, bool net,
+              struct burnt *burnt)
+{
+  struct part *known = ARENA_ARRAY (ev->arena, gas->count, struct part);
+  size_t n = 0;
+  *burnt = (struct burnt) { gas, 1, 0 };
+  for (size_t i = 0; i < gas->count; i++) {
+    const struct species *species = gas->species[i];
+    double H = net ? species->stated_net : species->stated_gross;
+    if (species->origin != SPECIES_STATED) {
+      known[n++] = (struct part) { species, gas->fraction[i] };
+      continue;
+    }
+    if (!(H > 0)) {
+      fault_set (ev->fault, MESSAGE_CALORIFIC_UNKNOWN, species->key, NULL);
+      fault_hint (ev->fault, "state it: gas %s with molar mass ..., %s calorific value ...",
+                  species->key, net ? "net" : "gross");
+      return false;
+    }
+    burnt->share -= gas->fraction[i];
+    burnt->stated += gas->fraction[i] * H;
+  }
+  if (n < gas->count) {
+    burnt->known = n ? composition_make (ev->arena, n, known, ev->fault) : NULL;
+  }
+  return n == 0 || burnt->known;
+}
+
+static enum calorific_edition
+edition (const struct evaluation *ev)
+{
+  return ev->settings->calorific_1995 ? CALORIFIC_1995 : CALORIFIC_2016;
+}
+
+static void
+assume_combustion (struct evaluation *ev)
+{
+  evaluation_touch (ev, TOUCH_COMBUSTION);
+  if (ev->describe && !ev->settings->is_set[SETTING_COMBUSTION]) {
+    evaluation_assume (ev, &(struct assumption) {
+        .kind = MESSAGE_TAKEN_COMBUSTION,
+        .fact = { temperature_text (ev->arena, ev->settings->combustion, false) },
+        .alternative = ALTERNATIVE_COMBUSTION });
+  }
+}
+
+/* Components whose figure is not the standard's own.  */
+static void
+note_origins (struct evaluation *ev, const struct composition *gas, unsigned origins)
+{
+  static const enum message said[CALORIFIC_ORIGINS] = {
+    [CALORIFIC_OTHER_EDITION] = MESSAGE_NOTE_CALORIFIC_EDITION,
+    [CALORIFIC_FORMATION] = MESSAGE_NOTE_CALORIFIC_FORMATION,
+    [CALORIFIC_FORMATION_25] = MESSAGE_NOTE_CALORIFIC_FORMATION,
+    [CALORIFIC_NO_FUEL] = MESSAGE_NOTE_CALORIFIC_NONE,
+    [CALORIFIC_TRACE] = MESSAGE_NOTE_CALORIFIC_NONE,
+  };
+  if (!ev->result || origins == 1u << CALORIFIC_STANDARD) {
+    return;
+  }
+  for (size_t i = 0; i < gas->count; i++) {
+    enum calorific_origin origin = calorific_origin (ev->session->calorific, edition (ev),
+                                                     gas->species[i]);
+    bool inert = origin == CALORIFIC_NO_FUEL
+                 && strcmp (gas->species[i]->flags, "simple-asphyxiant") == 0;
+    if (origin != CALORIFIC_STANDARD && !inert) {
+      note (ev, said[origin], gas->species[i]->key, NULL, NULL);
+    }
+  }
+}
+
+static bool
+known_figures (struct evaluation *ev, const struct heat_question *q,
+               const struct composition *gas, struct calorific *out)
+{
+  struct calorific_question ask = {
+    .edition = edition (ev), .T_combustion = ev->settings->combustion, .T_metering = q->T,
+    .p = q->p, .real = q->real };
+  for (size_t i = 0; i < gas->count; i++) {
+    if (gas->species[i]->origin == SPECIES_STATED) {
+      fault_set (ev->fault, MESSAGE_MODEL_LACKS, calorific_edition_name (edition (ev)),
+                 gas->species[i]->key);
+      fault_hint (ev->fault, "its compression factor was not stated: ask for ideal volumes");
+      return false;
+    }
+  }
+  if (!read_tables (ev)
+      || !calorific_compute (ev->session->calorific, gas, &ask, out, ev->fault)) {
+    return false;
+  }
+  assume_combustion (ev);
+  note_origins (ev, gas, out->origins);
+  return true;
+}
+
+bool
+heat_per_mole (struct evaluation *ev, const struct composition *gas, bool net, double *H)
+{
+  struct burnt burnt;
+  struct calorific figures;
+  struct heat_question q = { gas, 288.15, STANDARD_ATMOSPHERE, false };
+  if (!split_stated (ev, gas, net, &burnt)) {
+    return false;
+  }
+  *H = burnt.stated;
+  if (!burnt.known) {
+    return true;
+  }
+  if (!known_figures (ev, &q, burnt.known, &figures)) {
+    return false;
+  }
+  *H += burnt.share * figures.value[net ? CALORIFIC_NET_MOLAR : CALORIFIC_GROSS_MOLAR];
+  return true;
+}
+
+static bool
+is_net (int figure)
+{
+  return figure == CALORIFIC_NET_MOLAR || figure == CALORIFIC_NET_MASS
+         || figure == CALORIFIC_NET_VOLUME || figure == CALORIFIC_NET_WOBBE;
+}
+
+static bool
+is_wobbe (int figure)
+{
+  return figure == CALORIFIC_WOBBE || figure == CALORIFIC_NET_WOBBE;
+}
+
+/* Ideal-gas figures from the molar calorific value H: H/M, H p/(RT), and the latter over the root
+   of the relative density M/M_air (ISO 6976:2016, clauses 7 to 10).                             */
+static bool
+ideal_figure (struct evaluation *ev, const struct heat_question *q, int figure, double *value)
+{
+  double H, Vm = GAS_CONSTANT * q->T / q->p, M = q->gas->molar_mass;
+  if (!read_tables (ev) || !heat_per_mole (ev, q->gas, is_net (figure), &H)) {
+    return false;
+  }
+  if (figure == CALORIFIC_GROSS_MOLAR || figure == CALORIFIC_NET_MOLAR) {
+    *value = H;
+  } else if (figure == CALORIFIC_GROSS_MASS || figure == CALORIFIC_NET_MASS) {
+    *value = H / M;
+  } else if (is_wobbe (figure)) {
+    *value = H / Vm / sqrt (M / calorific_air_molar_mass (ev->session->calorific, edition (ev)));
+  } else {
+    *value = H / Vm;
+  }
+  return true;
+}
+
+static const char *
+basis_text (struct evaluation *ev, const struct heat_question *q, int figure)
+{
+  bool volume = is_wobbe (figure) || figure == CALORIFIC_GROSS_VOLUME
+                || figure == CALORIFIC_NET_VOLUME;
+  const char *name = calorific_edition_name (edition (ev));
+  const char *sort = is_net (figure) ? "net" : "gross";
+  const char *burnt = temperature_text (ev->arena, ev->settings->combustion, false);
+  if (figure == CALORIFIC_RELATIVE_DENSITY) {
+    return arena_format (ev->arena, "%s, %s, real, %s", temperature_text (ev->arena, q->T, false),
+                         pressure_text (ev->arena, q->p, false), name);
+  }
+  if (!volume) {
+    return arena_format (ev->arena, "%s, combustion %s, %s", sort, burnt, name);
+  }
+  return arena_format (ev->arena, "%s, combustion %s, metering %s, %s, %s, %s", sort, burnt,
+                       temperature_text (ev->arena, q->T, false),
+                       pressure_text (ev->arena, q->p, false), q->real ? "real" : "ideal", name);
+}
+
+bool
+heat_figure (struct evaluation *ev, const struct heat_question *asked, int figure, double *value,
+             const char **basis)
+{
+  struct heat_question q = *asked;
+  struct calorific figures;
+  if (isnan (q.T) || isnan (q.p)) {
+    q.T = ev->settings->family[FAMILY_STANDARD].at.T;
+    q.p = ev->settings->family[FAMILY_STANDARD].at.p;
+    assume_family (ev, FAMILY_STANDARD);
+  }
+  if (q.real) {
+    if (!known_figures (ev, &q, q.gas, &figures)) {
+      return false;
+    }
+    *value = figures.value[figure];
+  } else if (!ideal_figure (ev, &q, figure, value)) {
+    return false;
+  }
+  if (ev->describe) {
+    *basis = basis_text (ev, &q, figure);
+  }
+  return true;
+}
+
+double
+heat_air_molar_mass (struct evaluation *ev)
+{
+  /* ISO 6976: 28.96546 g/mol in 2016; without its tables that figure (2016, annex A).  */
+  struct fault unheard, *fault = ev->fault;
+  fault_init (&unheard, ev->arena);
+  ev->fault = &unheard;
+  bool read = read_tables (ev);
+  ev->fault = fault;
+  return read ? calorific_air_molar_mass (ev->session->calorific, edition (ev)) : 28.96546e-3;
+}
