@@ -10,6 +10,7 @@ EXTRA_DIST += \
   $(session_tests:.sh=.py)
 TESTS += $(session_tests)
 session_tests = \
+  %D%/air.sh \
   %D%/bad.sh \
   %D%/contract.sh \
   %D%/energy.sh \
