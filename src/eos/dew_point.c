@@ -14,6 +14,7 @@
 #include "eos/dew_point.h"
 
 #include <float.h>
+#include <assert.h>
 #include <math.h>
 #include <stddef.h>
 
@@ -120,6 +121,7 @@ mean_of (struct search *s, double ln_W[], struct point *mean)
     mean->b += W * s->pure[i].b;
     mean->root_a += W * s->root_a[i];
   }
+  assert (sum >= 1);                    /* the largest W is 1 */
   mean->b /= sum;
   mean->root_a /= sum;
   return most + log (sum);
