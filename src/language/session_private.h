@@ -160,7 +160,6 @@ struct figure {
   bool named;                               /* its row needs `what` to be understood */
 };
 struct figures { struct figure *at; size_t count, room; };
-void figures_add (struct evaluation *, struct figures *, const struct figure *);
 
 /* What an answer is about: what it is called, and where that stands.  */
 struct subject { const char *what; struct place at; };

@@ -29,7 +29,9 @@ static const char *const property_name[] = {
 #undef PROPERTY
 };
 
-void
+/* The figures of a property of what is called NAME, as a question would answer them; nothing where
+   it has none.                                                                                  */
+static void
 card_add_property (struct session *session, struct result *result, struct card *card,
                    const char *name, enum property property)
 {

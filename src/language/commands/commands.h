@@ -36,16 +36,8 @@ void card_of_state (struct session *, const struct definition *, struct result *
 void card_of_property (struct session *, enum property, struct result *);
 /* All settings, or only ONE.  */
 void card_of_settings (struct session *, const enum setting *one, struct result *);
-/* The figures of a property of what is called NAME, as a question would answer them; nothing where
-   it has none.                                                                                  */
-void card_add_property (struct session *, struct result *, struct card *, const char *name,
-                        enum property);
 void card_add_figure (struct result *, struct card *, const char *name, double value,
                       const char *unit, const char *basis);
-
-/* A session as plain statements, settings first, in an order that can be run again (save.c).  */
-struct text;
-void session_write (const struct session *, struct text *);
 
 /* "gas model".  */
 const char *setting_name (enum setting);

@@ -42,7 +42,8 @@ add_definition (const struct session *s, size_t i, bool written[], struct text *
   add_statement (out, d->source);
 }
 
-void
+/* A session as plain statements, settings first, in an order that can be run again.  */
+static void
 session_write (const struct session *s, struct text *out)
 {
   struct arena *arena = arena_create ();

@@ -9,7 +9,7 @@
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
 
-void
+static void
 figures_add (struct evaluation *ev, struct figures *figures, const struct figure *figure)
 {
   if (figures->count == figures->room) {

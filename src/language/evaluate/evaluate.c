@@ -193,7 +193,8 @@ known_gas (struct evaluation *ev, const struct node *node, const struct gas_valu
   return name_unknown (ev, node);
 }
 
-bool
+/* What a name means, at STATE if that is not null.  */
+static bool
 evaluate_name (struct evaluation *ev, const struct node *node, const struct state *state,
                struct value *out)
 {

@@ -89,9 +89,6 @@ bool evaluate (struct evaluation *, const struct node *, const struct state *,
                struct value *) MUST_CHECK;
 /* A figure: a quantity or a plain number; kind-wrong otherwise.  */
 bool evaluate_quantity (struct evaluation *, const struct node *, struct value *) MUST_CHECK;
-/* What a name means.  With STATE as above.  */
-bool evaluate_name (struct evaluation *, const struct node *, const struct state *,
-                    struct value *) MUST_CHECK;
 bool evaluate_of (struct evaluation *, const struct node *, const struct state *,
                   struct value *) MUST_CHECK;
 bool evaluate_sum (struct evaluation *, const struct node *, struct value *) MUST_CHECK;
@@ -130,7 +127,7 @@ struct state {
   enum moisture_kind moisture;
   double moist;                             /* humidity, K, or mol/mol of the wet gas */
   bool ideal, real;
-  struct place at, T_at, p_at;
+  struct place at;
 };
 /* A state that says nothing, standing AT.  */
 struct state state_empty (struct place at);

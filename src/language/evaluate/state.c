@@ -50,7 +50,6 @@ set_temperature (struct evaluation *ev, struct state *state, double T, struct pl
                          "a temperature must be above absolute zero", NULL);
   }
   state->T = T;
-  state->T_at = at;
   return true;
 }
 
@@ -65,7 +64,6 @@ set_pressure (struct evaluation *ev, struct state *state, double p, struct place
                          "an absolute pressure must be above zero", NULL);
   }
   state->p = p;
-  state->p_at = at;
   return true;
 }
 
