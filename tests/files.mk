@@ -34,6 +34,7 @@ with_gas = %D%/libtest.a $(upto_gas) $(CUNIT_LIBS) $(GSL_LIBS)
 with_eos = %D%/libtest.a $(upto_eos) $(CUNIT_LIBS) $(GSL_LIBS)
 with_property = %D%/libtest.a $(upto_property) $(CUNIT_LIBS) $(GSL_LIBS)
 with_stream = %D%/libtest.a $(upto_stream) $(CUNIT_LIBS) $(GSL_LIBS)
+with_balance = %D%/libtest.a $(upto_balance) $(CUNIT_LIBS) $(GSL_LIBS)
 with_result = %D%/libtest.a $(upto_result) $(CUNIT_LIBS) $(GSL_LIBS)
 with_language = %D%/libtest.a $(upto_language) $(CUNIT_LIBS) $(GSL_LIBS)
 with_report = %D%/libtest.a $(upto_report) $(CUNIT_LIBS) $(GSL_LIBS)
@@ -46,6 +47,7 @@ include %D%/modules/gas/files.mk
 include %D%/modules/eos/files.mk
 include %D%/modules/property/files.mk
 include %D%/modules/stream/files.mk
+include %D%/modules/balance/files.mk
 include %D%/modules/result/files.mk
 include %D%/modules/language/files.mk
 include %D%/modules/report/files.mk

@@ -135,7 +135,8 @@ bool
 result_is_empty (const struct result *result)
 {
   return result->answers == NULL && result->taken == NULL && result->notes == NULL
-         && result->cautions == NULL && result->cards == NULL && result->help == NULL;
+         && result->cautions == NULL && result->cards == NULL && result->help == NULL
+         && result->check == NULL && result->balance == NULL && result->workings == NULL;
 }
 
 /* How far a remark's alternative moves the figure; -1 sorts those without an effect last.  */

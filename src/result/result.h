@@ -9,7 +9,7 @@
 #include <stddef.h>
 #include "support/message.h"
 
-struct arena; struct workings;
+struct arena; struct balance_verdict; struct check_verdict; struct workings_record;
 
 /* One figure with its basis: a row that makes sense when cut out and sent to somebody.  */
 struct answer {
@@ -59,6 +59,9 @@ struct result {
   struct remark *taken, *notes, *cautions;
   struct remark **last_taken, **last_note, **last_caution;
   struct card *cards;             /* usually none or one; result_card appends */
+  const struct check_verdict *check;          /* of check; or null */
+  const struct balance_verdict *balance;      /* of solve; or null */
+  const struct workings_record *workings;     /* of workings; or null */
   struct help_page *help;
   bool quit;
 };
