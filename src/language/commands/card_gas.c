@@ -119,18 +119,18 @@ molar_line (struct session *session, struct result *result, struct card *card,
                                             gas->molar_mass / heat_air_molar_mass (&ev))));
 }
 
-/* Where it burns in air; nothing for a gas that does not.  */
-static void
-limits_line (struct result *result, struct card *card, const struct composition *gas)
+void
+card_add_limits (struct result *result, struct card *card, const struct composition *gas)
 {
   struct flammability f;
   struct fault unheard;
   struct arena *arena = result->arena;
   fault_init (&unheard, arena);
   if (flammability_of (gas, NULL, 0, &f, NULL, &unheard) && f.kind == FLAMMABLE_BETWEEN) {
+    const char *to = isnan (f.upper) ? "" : f.upper_is_bound ? " to at most " : " to ";
     card_add_line (result, card,
                    arena_format (arena, "flammable in air from %s%s%s vol%%",
-                                 rough_text (arena, 100 * f.lower), isnan (f.upper) ? "" : " to ",
+                                 rough_text (arena, 100 * f.lower), to,
                                  isnan (f.upper) ? "" : rough_text (arena, 100 * f.upper)));
   }
 }
@@ -158,7 +158,7 @@ closed_card (struct session *session, const struct gas_value *gas, const char *n
   }
   molar_line (session, result, card, c);
   heat_line (session, result, card, c);
-  limits_line (result, card, c);
+  card_add_limits (result, card, c);
 }
 
 /* An open gas: only what was stated, and how to close it.  */

@@ -9,7 +9,7 @@
 #include "language/session_private.h"
 #include "support/check.h"
 
-struct card; struct gas_value; struct reference; struct species; struct stream; struct unit;
+struct card; struct composition; struct gas_value; struct reference; struct species; struct stream; struct unit;
 
 typedef bool command (struct session *, const struct statement *, struct result *,
                       struct fault *);
@@ -38,6 +38,8 @@ void card_of_property (struct session *, enum property, struct result *);
 void card_of_settings (struct session *, const enum setting *one, struct result *);
 void card_add_figure (struct result *, struct card *, const char *name, double value,
                       const char *unit, const char *basis);
+/* A line that says where it burns in air; none for a gas that does not.  */
+void card_add_limits (struct result *, struct card *, const struct composition *);
 
 /* "gas model".  */
 const char *setting_name (enum setting);

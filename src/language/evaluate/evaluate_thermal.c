@@ -127,11 +127,25 @@ property_viscosity (struct evaluation *ev, const struct property_question *q, st
 
 /* ---- Flammable limits ---- */
 
+/* The published limits are for about 20 degC and 1 atm; at this state they would be others.  */
+static bool
+away_from_usual (const struct property_question *q)
+{
+  return q->state && (fabs (q->T - 293.15) > 25 || fabs (q->p - STANDARD_ATMOSPHERE) > 2e4);
+}
+
 static void
 tell_flammable (struct evaluation *ev, const struct property_question *q,
                 const struct flammability *f)
 {
   const char *name = q->node->b->kind == NODE_NAME ? q->node->b->text : "the gas";
+  if (away_from_usual (q)) {
+    note (ev, MESSAGE_NOTE_LIMITS_STATE,
+          arena_format (ev->arena, "%s%s%s",
+                        isnan (q->T) ? "" : temperature_text (ev->arena, q->T, false),
+                        isnan (q->T) || isnan (q->p) ? "" : ", ",
+                        isnan (q->p) ? "" : pressure_text (ev->arena, q->p, false)), NULL, NULL);
+  }
   if (f->upper_is_bound) {
     note (ev, MESSAGE_NOTE_UPPER_IS_BOUND, NULL, NULL, NULL);
   }

@@ -184,7 +184,10 @@ basis_text (struct evaluation *ev, const struct heat_question *q, int figure)
 {
   bool volume = is_wobbe (figure) || figure == CALORIFIC_GROSS_VOLUME
                 || figure == CALORIFIC_NET_VOLUME;
-  const char *name = calorific_edition_name (edition (ev));
+  struct burnt parts;
+  bool stated = figure != CALORIFIC_RELATIVE_DENSITY
+                && split_stated (ev, q->gas, is_net (figure), &parts) && !parts.known;
+  const char *name = stated ? "as stated" : calorific_edition_name (edition (ev));
   const char *sort = is_net (figure) ? "net" : "gross";
   const char *burnt = temperature_text (ev->arena, ev->settings->combustion, false);
   if (figure == CALORIFIC_RELATIVE_DENSITY) {
