@@ -9,7 +9,8 @@
 #include "language/session_private.h"
 #include "support/check.h"
 
-struct card; struct composition; struct gas_value; struct reference; struct species; struct stream; struct unit;
+struct card; struct composition; struct gas_value; struct reference; struct species;
+struct stream; struct unit;
 
 typedef bool command (struct session *, const struct statement *, struct result *,
                       struct fault *);
