@@ -1,6 +1,8 @@
 noinst_LIBRARIES += %D%/libreport.a
 
 %C%_libreport_a_SOURCES = \
+  %D%/canvas.c \
+  %D%/canvas.h \
   %D%/card.c \
   %D%/csv.c \
   %D%/error.c \

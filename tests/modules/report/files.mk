@@ -4,6 +4,10 @@
 #   %C%_t_NAME_SOURCES = %D%/t_NAME.c
 #   %C%_t_NAME_LDADD = $(with_report)
 
+suites += %D%/t_canvas
+%C%_t_canvas_SOURCES = %D%/t_canvas.c
+%C%_t_canvas_LDADD = $(with_report)
+
 suites += %D%/t_figure
 %C%_t_figure_SOURCES = %D%/t_figure.c
 %C%_t_figure_LDADD = $(with_report)
