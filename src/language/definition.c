@@ -332,11 +332,12 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
   return true;
 }
 
+/* Is anything it draws on moved?  */
 static bool
-draws_on (const struct definition *d, const struct spread *source)
+is_moved (const struct evaluation *ev, const struct definition *d)
 {
-  for (size_t i = 0; i < d->source_count; i++)
-    if (d->sources[i] == source) {
+  for (size_t i = 0; ev->shift_count > 0 && i < d->source_count; i++)
+    if (fabs (evaluation_shift (ev, d->sources[i].what)) > 0) {
       return true;
     }
   return false;
@@ -361,7 +362,7 @@ bring_up_to_date (struct evaluation *ev, struct definition *d, struct place at)
   ev->touched |= d->touched;
   evaluation_use (ev, d);
   for (size_t i = 0; i < d->source_count; i++) {
-    evaluation_source (ev, d->sources[i]);
+    evaluation_source (ev, &d->sources[i]);
   }
   for (size_t i = 0; ev->describe && i < d->assumption_count; i++) {
     evaluation_assume (ev, &d->assumptions[i]);
@@ -373,29 +374,48 @@ bring_up_to_date (struct evaluation *ev, struct definition *d, struct place at)
 static bool
 cache_serves (const struct evaluation *ev, const struct definition *d)
 {
-  return !(ev->overridden & d->touched) && !(ev->moved && draws_on (d, ev->moved))
+  return !(ev->overridden & d->touched) && !is_moved (ev, d)
          && !(ev->stand_in_count && (d->touched & TOUCH_QUANTITY));
 }
 
-/* Works a definition out under the settings of EV, leaving its cache alone.  */
-static bool
-work_out (struct evaluation *ev, const struct definition *d, struct place at, struct value *value,
-          struct state *state)
+/* What a definition came to under the settings and shifts of one evaluation.  */
+struct worked {
+  const struct definition *definition;
+  struct value value;
+  struct state state;
+  const struct worked *next;
+};
+
+/* Works a definition out under the settings of EV, leaving its cache alone.  Once in an evaluation:
+   a chain of names that each use the one before twice would take forever.                        */
+static const struct worked *
+work_out (struct evaluation *ev, const struct definition *d, struct place at)
 {
+  for (const struct worked *w = ev->worked; w; w = w->next)
+    if (w->definition == d) {
+      return w;
+    }
+  struct worked *new = ARENA_NEW (ev->arena, struct worked);
   const char *subject = ev->subject;
   struct fault *fault = ev->fault, inside;
   fault_init (&inside, fault->arena);
   ev->fault = &inside;
-  bool done = body (ev, d, value, state);
+  bool done = body (ev, d, &new->value, &new->state);
   ev->fault = fault;
   ev->subject = subject;
-  return done || fault_set_at (fault, inside.kind, at, inside.fact[0], inside.fact[1]);
+  if (!done) {
+    fault_set_at (fault, inside.kind, at, inside.fact[0], inside.fact[1]);
+    return NULL;
+  }
+  new->definition = d;
+  new->next = ev->worked;
+  ev->worked = new;
+  return new;
 }
 
 const struct value *
 definition_value (struct evaluation *ev, struct definition *d, struct place at)
 {
-  struct state unused;
   for (size_t i = 0; i < ev->stand_in_count; i++)
     if (ev->stand_ins[i].definition == d) {
       return &ev->stand_ins[i].value;
@@ -406,22 +426,21 @@ definition_value (struct evaluation *ev, struct definition *d, struct place at)
   if (cache_serves (ev, d)) {
     return &d->value;
   }
-  struct value *value = ARENA_NEW (ev->arena, struct value);
-  return work_out (ev, d, at, value, &unused) ? value : NULL;
+  const struct worked *worked = work_out (ev, d, at);
+  return worked ? &worked->value : NULL;
 }
 
 const struct state *
 definition_state (struct evaluation *ev, struct definition *d, struct place at)
 {
-  struct value unused;
   if (!bring_up_to_date (ev, d, at)) {
     return NULL;
   }
   if (cache_serves (ev, d)) {
     return &d->state;
   }
-  struct state *state = ARENA_NEW (ev->arena, struct state);
-  return work_out (ev, d, at, &unused, state) ? state : NULL;
+  const struct worked *worked = work_out (ev, d, at);
+  return worked ? &worked->state : NULL;
 }
 
 /* ---- What it has to say ---- */

@@ -36,7 +36,11 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/evaluate/flow.c \
   %D%/evaluate/flow.h \
   %D%/evaluate/heat.c \
+  %D%/evaluate/question.c \
+  %D%/evaluate/source.c \
   %D%/evaluate/state.c \
+  %D%/evaluate/uncertainty.c \
+  %D%/evaluate/uncertainty.h \
   %D%/evaluate/value.c \
   %D%/evaluate/value.h \
   %D%/evaluate/volume.c \

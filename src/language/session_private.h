@@ -33,7 +33,7 @@ struct definition {
   struct state state;                      /* of a reference */
   unsigned touched;
   struct assumption *assumptions;
-  const struct spread **sources;
+  struct source *sources;
   size_t assumption_count, source_count;
   struct remark *notes, *cautions;         /* from the cache */
   bool told;                               /* its notes have stood under an answer */
@@ -148,7 +148,7 @@ void undo_group_close (struct session *);
 void undo_group_drop (struct session *);
 void undo_clear (struct session *);
 
-/* ---- Questions (ask.c, convert.c) ---- */
+/* ---- Questions (ask.c, question.c, convert.c) ---- */
 
 /* One figure of an answer.  */
 struct figure {
@@ -166,6 +166,11 @@ struct subject { const char *what; struct place at; };
 /* VALUE in TARGET (null: in the units it was typed in).  */
 bool convert_value (struct evaluation *, const struct value *, const struct target *,
                     const struct subject *, struct figures *) MUST_CHECK;
+/* What the question S asks for, and its figures in every target, in that order.  */
+bool question_figures (struct evaluation *, const struct statement *, struct value *,
+                       struct figures *) MUST_CHECK;
+/* The same question once more, under an evaluation the caller prepared.  */
+bool question_again (struct evaluation *, const struct statement *, struct figures *) MUST_CHECK;
 /* Runs a question: figures, uncertainties, assumptions with their effects, notes.  */
 bool ask (struct session *, const struct statement *, struct result *, struct fault *) MUST_CHECK;
 #endif

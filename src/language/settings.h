@@ -20,7 +20,7 @@ struct settings {
   struct family_setting family[FAMILY_COUNT];
   double site_pressure;                    /* Pa */
   const char *site_pressure_text;          /* as it was set; null: as shipped */
-  const struct spread *site_pressure_spread;
+  const struct node *site_pressure_spread; /* the figure set, if it is uncertain; or null */
   double site_altitude;                    /* m; NAN: the pressure was not estimated from it */
   const char *site_altitude_text;
   enum gas_model model;

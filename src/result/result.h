@@ -11,6 +11,20 @@
 
 struct arena; struct balance_verdict; struct check_verdict; struct workings_record;
 
+/* What the uncertainty of a figure is made of: a line for each uncertain figure that moves it, the
+   largest share first.  What they contribute is independent of each other.                      */
+struct budget_line {
+  const char *what;               /* as typed: "CH4 58.2 ± 0.3 mol%" */
+  const char *of;                 /* the name it is part of: "raw"; null: the question itself */
+  double u;                       /* its standard uncertainty */
+  const char *unit;               /* of u; "" for a plain number */
+  double sensitivity;             /* what the figure moves by for one of that unit */
+  double contribution;            /* what it moves by for u, with its sign */
+  double share;                   /* of the variance, 0 to 1 */
+  size_t order;                   /* in which it was met */
+};
+struct budget { double uncertainty; size_t count; const struct budget_line *lines; };
+
 /* One figure with its basis: a row that makes sense when cut out and sent to somebody.  */
 struct answer {
   const char *what;               /* "raw", "CH4 of raw" */
@@ -19,6 +33,7 @@ struct answer {
   double value;
   const char *unit;               /* "" for a plain number */
   double uncertainty;             /* standard, in the unit; NAN: none */
+  const struct budget *budget;    /* what that is made of; or null */
   const char *moisture;           /* "dry", "wet" or null */
   const char *basis;              /* the rest: "0 degC, 101.325 kPa, ideal-gas volume"; or null */
   struct answer *next;

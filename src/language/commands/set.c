@@ -112,7 +112,7 @@ set_barometer (const struct statement *s, double si, struct settings *new, struc
     return out_of_range (s, fault, "a barometer lies between 0 and 2 bar");
   }
   new->site_pressure = pressure;
-  new->site_pressure_spread = altitude ? NULL : s->value->spread;
+  new->site_pressure_spread = !altitude && s->value->spread ? s->value : NULL;
   new->site_altitude = altitude ? si : UNSTATED;
   new->site_altitude_text = altitude ? strstr (s->source, s->value->figure) : NULL;
   new->is_set[SETTING_SITE_PRESSURE] = !altitude;

@@ -4,115 +4,12 @@
 #include <math.h>
 #include <string.h>
 #include "gas/composition.h"
+#include "language/evaluate/uncertainty.h"
 #include "language/evaluate/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/memory.h"
 #include "units/constants.h"
-
-/* ---- The figures ---- */
-
-/* What an expression is called in an answer: "raw" for 850 Nm3/h of raw.  */
-static const char *
-subject_text (const struct evaluation *ev, const struct statement *s, const struct node *node)
-{
-  struct arena *arena = ev->arena;
-  for (;;) {
-    if (node->kind == NODE_AT || node->kind == NODE_WITHIN) {
-      node = node->a;
-    } else if (node->kind == NODE_OF && node->a->kind == NODE_QUANTITY) {
-      node = node->b;
-    } else if (node->kind == NODE_THAT && ev->session->last_subject) {
-      return arena_string (arena, ev->session->last_subject);
-    } else {
-      return node_text (arena, s, node);
-    }
-  }
-}
-
-static bool
-figures_of (struct evaluation *ev, const struct statement *s, struct value *value,
-            struct figures *figures)
-{
-  if (!evaluate (ev, s->value, NULL, value)) {
-    fault_place (ev->fault, s->value->at);
-    return false;
-  }
-  struct subject subject = { ev->describe ? subject_text (ev, s, s->value) : "", s->value->at };
-  const struct target *target = s->targets;
-  do {
-    if (!convert_value (ev, value, target, &subject, figures)) {
-      fault_place (ev->fault, target ? target->at : s->value->at);
-      return false;
-    }
-    target = target ? target->next : NULL;
-  } while (target);
-  return true;
-}
-
-/* The same question once more, prepared by the caller; false if it cannot be answered so.  */
-static bool
-figures_again (struct evaluation *again, const struct statement *s, struct figures *figures)
-{
-  struct value value;
-  return figures_of (again, s, &value, figures);
-}
-
-/* ---- Uncertainty ---- */
-
-/* Adds up, for each figure, the squares of what moving each source does to it: half the
-   difference between the answers with the source one standard uncertainty up and down
-   (Kragten, Analyst 119 (1994) 2161; JCGM 100:2008, 5.1.3 note 2).                              */
-static bool
-add_source (const struct evaluation *ev, const struct statement *s, const struct spread *source,
-            double variance[], size_t count)
-{
-  struct figures moved[2] = { { NULL, 0, 0 }, { NULL, 0, 0 } };
-  struct settings settings = *ev->settings;
-  settings.ignore_total = true;
-  for (int i = 0; i < 2; i++) {
-    struct evaluation again;
-    struct fault fault;
-    fault_init (&fault, ev->arena);
-    evaluation_again (&again, ev, &fault);
-    again.settings = &settings;
-    again.overridden = 0;
-    again.moved = source;
-    again.moved_by = i ? -1 : 1;
-    if (!figures_again (&again, s, &moved[i])) {
-      return fault_set (ev->fault, fault.kind, fault.fact[0], fault.fact[1]);
-    }
-  }
-  for (size_t i = 0; i < count && i < moved[0].count && i < moved[1].count; i++) {
-    double half = 0.5 * (moved[0].at[i].value - moved[1].at[i].value);
-    variance[i] += half * half;
-  }
-  return true;
-}
-
-/* What moves by less does not depend on the source: the figures differ by rounding alone.  */
-#define ROUNDING 1e-12
-
-static bool
-uncertainties (const struct evaluation *ev, const struct statement *s, struct answer *answers,
-               size_t count)
-{
-  if (ev->source_count == 0) {
-    return true;
-  }
-  double *variance = ARENA_ARRAY (ev->arena, count, double);
-  for (size_t i = 0; i < ev->source_count; i++)
-    if (!add_source (ev, s, ev->sources[i], variance, count)) {
-      fault_place (ev->fault, s->value->at);
-      return false;
-    }
-  size_t i = 0;
-  for (struct answer *a = answers; a && i < count; a = a->next, i++) {
-    double u = sqrt (variance[i]);
-    a->uncertainty = u > ROUNDING * fabs (a->value) ? u : UNSTATED;
-  }
-  return true;
-}
 
 /* ---- What the usual alternative would do ---- */
 
@@ -219,7 +116,7 @@ effect_of (const struct evaluation *ev, const struct statement *s, const struct 
   evaluation_again (&again, ev, &fault);
   again.settings = &other->settings;
   again.overridden = other->overridden;
-  if (!figures_again (&again, s, &others) || others.count != figures->count) {
+  if (!question_again (&again, s, &others) || others.count != figures->count) {
     return UNSTATED;
   }
   for (size_t i = 0; i < others.count; i++) {
@@ -273,6 +170,22 @@ add_answers (struct result *result, const struct figures *figures)
   return first;
 }
 
+static bool
+add_uncertainties (const struct evaluation *ev, const struct statement *s,
+                   const struct figures *figures, struct answer *answers)
+{
+  const struct budget **budgets = uncertainty_budgets (ev, s, figures);
+  if (!budgets) {
+    return false;
+  }
+  size_t i = 0;
+  for (struct answer *a = answers; a && i < figures->count; a = a->next, i++) {
+    a->budget = budgets[i];
+    a->uncertainty = budgets[i] ? budgets[i]->uncertainty : UNSTATED;
+  }
+  return true;
+}
+
 static void
 caution_value (struct evaluation *ev, const struct statement *s, const struct value *value)
 {
@@ -317,11 +230,10 @@ ask (struct session *session, const struct statement *s, struct result *result,
   struct value value;
   struct figures figures = { NULL, 0, 0 };
   evaluation_init (&ev, session, result, fault);
-  if (!figures_of (&ev, s, &value, &figures)) {
+  if (!question_figures (&ev, s, &value, &figures)) {
     return false;
   }
-  struct answer *answers = add_answers (result, &figures);
-  if (!uncertainties (&ev, s, answers, figures.count)) {
+  if (!add_uncertainties (&ev, s, &figures, add_answers (result, &figures))) {
     return false;
   }
   for (size_t i = 0; i < ev.assumption_count; i++) {

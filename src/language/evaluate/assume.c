@@ -28,8 +28,7 @@ evaluation_touch (struct evaluation *ev, unsigned bits)
   ev->touched |= bits;
 }
 
-/* Room for one more of COUNT things of SIZE bytes.  */
-static void *
+void *
 room_for_one (struct arena *arena, void *things, size_t count, size_t *room, size_t size)
 {
   if (count < *room) {
@@ -68,18 +67,6 @@ evaluation_assume (struct evaluation *ev, const struct assumption *new)
 }
 
 void
-evaluation_source (struct evaluation *ev, const struct spread *source)
-{
-  for (size_t i = 0; i < ev->source_count; i++)
-    if (ev->sources[i] == source) {
-      return;
-    }
-  ev->sources = room_for_one (ev->arena, ev->sources, ev->source_count, &ev->source_room,
-                              sizeof *ev->sources);
-  ev->sources[ev->source_count++] = source;
-}
-
-void
 evaluation_use (struct evaluation *ev, struct definition *definition)
 {
   for (size_t i = 0; i < ev->used_count; i++)
@@ -89,35 +76,4 @@ evaluation_use (struct evaluation *ev, struct definition *definition)
   ev->used = room_for_one (ev->arena, ev->used, ev->used_count, &ev->used_room,
                            sizeof *ev->used);
   ev->used[ev->used_count++] = definition;
-}
-
-/* The standard uncertainty in the figure's own unit: an expanded one over its k, limits over the
-   square root of 3 (JCGM 100:2008, 4.3.7), a relative one times the figure.                     */
-static double
-standard_uncertainty (const struct spread *spread, const struct unit *unit, double value)
-{
-  double u = spread->value;
-  if (spread->relative) {
-    u *= 0.01 * (value < 0 ? -value : value);
-  } else if (spread->unit && unit && spread->unit != unit) {
-    u = unit_difference_to_si (spread->unit, u) / unit->factor;
-  }
-  if (spread->kind == SPREAD_EXPANDED) {
-    u /= spread->k;
-  } else if (spread->kind == SPREAD_LIMITS) {
-    u /= 1.7320508075688772;
-  }
-  return u;
-}
-
-double
-evaluation_moved (struct evaluation *ev, const struct spread *spread, const struct unit *unit,
-                  double value)
-{
-  if (!spread) {
-    return value;
-  }
-  evaluation_source (ev, spread);
-  return spread == ev->moved ? value + ev->moved_by * standard_uncertainty (spread, unit, value)
-                             : value;
 }

@@ -42,8 +42,7 @@ static double
 above_barometer (struct evaluation *ev, const struct node *node, double si)
 {
   bool gauge = node->unit->sort == UNIT_GAUGE;
-  double site = evaluation_moved (ev, ev->settings->site_pressure_spread, NULL,
-                                  ev->settings->site_pressure);
+  double site = evaluation_barometer (ev);
   double absolute = gauge ? site + si : site - si;
   evaluation_touch (ev, TOUCH_SITE);
   if (ev->describe) {
@@ -60,7 +59,7 @@ quantity_node (struct evaluation *ev, const struct node *node, struct value *out
   if (node->a && !named_number (ev, node, &number)) {
     return false;
   }
-  number = evaluation_moved (ev, node->spread, node->unit, number);
+  number = evaluation_moved (ev, node, number);
   *out = value_number (number);
   if (!node->unit) {
     return true;
@@ -257,8 +256,7 @@ evaluate (struct evaluation *ev, const struct node *node, const struct state *st
     }
     break;
   case NODE_SITE_PRESSURE:
-    *out = value_number (evaluation_moved (ev, ev->settings->site_pressure_spread, NULL,
-                                           ev->settings->site_pressure));
+    *out = value_number (evaluation_barometer (ev));
     out->measure = (struct measure) { .dimension = DIMENSION_PRESSURE, .sort = UNIT_ABSOLUTE };
     evaluation_touch (ev, TOUCH_SITE);
     assume_site_pressure (ev);

@@ -118,7 +118,14 @@ part_figure (struct evaluation *ev, const struct node *part, const struct unit *
              struct part_figure *f)
 {
   struct value v;
-  if (!evaluate_quantity (ev, part->a, &v)) {
+  const struct node *outer = ev->part;
+  const struct unit *outer_basis = ev->basis;
+  ev->part = part;
+  ev->basis = basis;
+  bool done = evaluate_quantity (ev, part->a, &v);
+  ev->part = outer;
+  ev->basis = outer_basis;
+  if (!done) {
     return false;
   }
   f->unit = part->unit ? part->unit : v.unit ? v.unit : basis;

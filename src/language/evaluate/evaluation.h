@@ -2,9 +2,8 @@
 
    Evaluation is a function of a tree, a session's definitions and settings; it changes nothing
    but the caches of definitions.  The same answer can be worked out again under other settings or
-   with one uncertain figure moved: that is how the effect of an assumption and the uncertainty of
-   an answer are found (Kragten, Analyst 119 (1994) 2161; JCGM 100:2008, 5.1.3 note 2), with no
-   derivative anywhere.                                                                          */
+   with uncertain figures moved: that is how the effect of an assumption and the uncertainty of an
+   answer (uncertainty.h) are found, with no derivative anywhere.                                */
 #ifndef LANGUAGE_EVALUATE_EVALUATION_H
 #define LANGUAGE_EVALUATE_EVALUATION_H
 
@@ -16,7 +15,19 @@
 #include "support/check.h"
 #include "support/fault.h"
 
-struct arena; struct definition; struct result; struct session;
+struct arena; struct definition; struct result; struct session; struct worked;
+
+/* An uncertain figure, told apart from others by the address of what it belongs to.  */
+struct source {
+  const void *what;                         /* struct spread: typed */
+  double u;                                 /* standard uncertainty, in UNIT */
+  const char *unit;
+  const char *text;                         /* "CH4 58.2 ± 0.3 mol%" */
+  const char *of;                           /* the name it is part of; null: the question */
+};
+
+/* A source moved BY standard uncertainties.  */
+struct shift { const void *what; double by; };
 
 /* A value tried in place of what a definition says.  */
 struct stand_in { const struct definition *definition; struct value value; };
@@ -55,13 +66,16 @@ struct evaluation {
   unsigned overridden;                      /* settings that differ from the session's */
   const struct stand_in *stand_ins;         /* values tried in place of definitions */
   size_t stand_in_count;
-  const struct spread *moved;               /* the uncertain figure that is moved, or null */
-  double moved_by;                          /* by how many standard uncertainties */
+  const struct shift *shifts;               /* uncertain figures that are moved */
+  size_t shift_count;
+  const struct node *part;                  /* of a list, while its amount is read; or null */
+  const struct unit *basis;                 /* of that list; or null */
+  const struct worked *worked;              /* definitions worked out under this evaluation */
 
   unsigned touched;
   size_t assumption_count, assumption_room, source_count, source_room, used_count, used_room;
   struct assumption *assumptions;           /* what was taken, each once */
-  const struct spread **sources;            /* uncertain figures met, told apart by their address */
+  struct source *sources;                   /* uncertain figures met, each once */
   struct definition **used;                 /* definitions met, each once */
 };
 
@@ -69,16 +83,25 @@ void evaluation_init (struct evaluation *, struct session *, struct result *, st
 /* A second look at the same thing: same session and arena, no notes, FAULT of its own.  */
 void evaluation_again (struct evaluation *, const struct evaluation *first, struct fault *);
 
+/* THINGS with room for one more than the COUNT there are, of SIZE bytes each.  */
+void *room_for_one (struct arena *, void *things, size_t count, size_t *room, size_t size);
+
 void evaluation_touch (struct evaluation *, unsigned bits);
 /* Adds an assumption unless the same one is there.  */
 void evaluation_assume (struct evaluation *, const struct assumption *);
-void evaluation_source (struct evaluation *, const struct spread *);
 void evaluation_use (struct evaluation *, struct definition *);
 
-/* The figure of a quantity node moved, if it is the one to be moved; notes its source.  VALUE is
-   the figure in its unit; the spread's standard uncertainty is in the same unit.                */
-double evaluation_moved (struct evaluation *, const struct spread *, const struct unit *,
-                         double value);
+/* ---- Uncertain figures (source.c) ---- */
+
+/* Adds a source unless it is there.  Only while `describe`: a second look finds the same ones.  */
+void evaluation_source (struct evaluation *, const struct source *);
+/* By how many standard uncertainties what belongs to WHAT is moved.  */
+double evaluation_shift (const struct evaluation *, const void *what);
+
+/* VALUE in the unit of NODE, a quantity, moved as its spread is; notes its source.  */
+double evaluation_moved (struct evaluation *, const struct node *, double value);
+/* The barometer as set, moved likewise.  */
+double evaluation_barometer (struct evaluation *);
 
 /* ---- Expressions (evaluate.c) ---- */
 

@@ -17,3 +17,7 @@ suites += %D%/t_samples
   %D%/tree_print.c \
   %D%/tree_print.h
 %C%_t_samples_LDADD = $(with_language)
+
+suites += %D%/t_uncertainty
+%C%_t_uncertainty_SOURCES = %D%/t_uncertainty.c
+%C%_t_uncertainty_LDADD = $(with_language)
