@@ -4,6 +4,10 @@ noinst_LIBRARIES += %D%/libreport.a
   %D%/canvas.c \
   %D%/canvas.h \
   %D%/card.c \
+  %D%/chart.c \
+  %D%/chart.h \
+  %D%/chart_plan.c \
+  %D%/chart_plan.h \
   %D%/csv.c \
   %D%/error.c \
   %D%/figure.c \

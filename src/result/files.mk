@@ -1,5 +1,6 @@
 noinst_LIBRARIES += %D%/libresult.a
 
 %C%_libresult_a_SOURCES = \
+  %D%/chart.h \
   %D%/result.c \
   %D%/result.h

@@ -15,3 +15,7 @@ suites += %D%/t_figure
 suites += %D%/t_report
 %C%_t_report_SOURCES = %D%/t_report.c
 %C%_t_report_LDADD = $(with_report)
+
+suites += %D%/t_chart
+%C%_t_chart_SOURCES = %D%/t_chart.c
+%C%_t_chart_LDADD = $(with_report)
