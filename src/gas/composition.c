@@ -72,6 +72,15 @@ composition_pure (struct arena *arena, const struct species *species)
 }
 
 const struct composition *
+composition_unclosed (struct arena *arena, const struct composition *gas, double factor)
+{
+  double *x = ARENA_ARRAY (arena, gas->count, double);
+  for (size_t i = 0; i < gas->count; i++)
+    x[i] = gas->fraction[i] * factor;
+  return finish (arena, gas->count, gas->species, x);
+}
+
+const struct composition *
 composition_keep (struct arena *arena, const struct composition *from)
 {
   const struct species **species = ARENA_ARRAY (arena, from->count, const struct species *);

@@ -27,6 +27,10 @@ struct composition {
 const struct composition *composition_make (struct arena *, size_t n, const struct part parts[],
                                             struct fault *) MUST_CHECK;
 const struct composition *composition_pure (struct arena *, const struct species *) MUST_CHECK;
+/* GAS with every fraction times FACTOR: not closed.  For uncertainties alone, where one part is
+   moved and the others stay as they were (ISO 6976:2016, annex B).                              */
+const struct composition *composition_unclosed (struct arena *, const struct composition *gas,
+                                                double factor) MUST_CHECK;
 /* A copy in another arena ("keep").  */
 const struct composition *composition_keep (struct arena *, const struct composition *) MUST_CHECK;
 

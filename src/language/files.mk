@@ -23,6 +23,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/definition.c \
   %D%/evaluate/ask.c \
   %D%/evaluate/assume.c \
+  %D%/evaluate/constants.c \
   %D%/evaluate/evaluate.c \
   %D%/evaluate/evaluate_dew.c \
   %D%/evaluate/evaluate_gas.c \

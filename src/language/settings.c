@@ -35,6 +35,7 @@ settings_init (struct settings *s)
     .total_tolerance = 0.005,
     .below = BELOW_HALF,
     .combustion = 288.15,
+    .coverage = 1,
     .digits = 6,
     .vapour_factor = 1,
   };

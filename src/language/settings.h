@@ -30,6 +30,9 @@ struct settings {
   enum below_detection below;
   double combustion;                       /* K */
   bool calorific_1995;
+  bool parts_independent;                  /* a list with one part moved is not closed again */
+  bool constants_uncertain;                /* figures of tables and equations are sources too */
+  double coverage;                         /* uncertainties are shown times this */
   int digits;
   bool ignore_total;                       /* while a figure is moved by its uncertainty */
   bool bare_is_gauge;                      /* while the gauge reading of bare pressures is tried */

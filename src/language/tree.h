@@ -30,13 +30,16 @@ enum setting {
 enum word { WORD_DRY = 1, WORD_WET = 2, WORD_REAL = 4, WORD_IDEAL = 8, WORD_GROSS = 16,
             WORD_NET = 32 };
 
+/* The standard a property goes by: ISO 6976 in the edition that is set, or in one of them.  */
+enum standard { STANDARD_NONE, STANDARD_AS_SET, STANDARD_2016, STANDARD_1995 };
+
 enum node_kind {
   /* Figures and names.  */
   NODE_QUANTITY,       /* number, figure (as typed), unit or null, words, spread; or `a` = NODE_NAME
                           in place of the number: q m3/h */
   NODE_NAME,           /* text (a name, a component, a multi-word component as typed) */
   NODE_SITE_PRESSURE,
-  NODE_PROPERTY,       /* property, text; only as `a` of NODE_OF */
+  NODE_PROPERTY,       /* property, text, by; only as `a` of NODE_OF */
   NODE_THAT,
   /* Chains.  */
   NODE_OF,             /* a of b; a: NODE_PROPERTY, NODE_QUANTITY, NODE_NAME or a bracketed sum */
@@ -87,6 +90,7 @@ struct node {
   const char *text;               /* a name, without quotes, UTF-8 twins made ASCII */
   bool quoted;
   enum property property;
+  enum standard by;               /* of NODE_PROPERTY */
   double number;
   const char *figure;             /* the number as typed */
   const struct unit *unit;

@@ -37,6 +37,7 @@ struct frame {
   const struct calorific_constants *constants;
   size_t combustion, metering;           /* METERINGS: not one of the standard's */
   double T, R;
+  double L, air, air_Z;                  /* of water, J/mol; of dry air, kg/mol, at 101.325 kPa */
 };
 
 struct totals {
@@ -48,6 +49,14 @@ struct totals {
 
 /* One part of the gas: v, and the standard uncertainties of Hc and s.  */
 struct single { double v[SUMS], u_H, u_s; const double *atoms; enum calorific_origin origin; };
+
+/* A constant, moved if it is to be.  */
+static double
+moved (const struct frame *f, enum calorific_doubt_kind kind, double value, const double *u)
+{
+  return value + calorific_move (&f->ask->moves,
+                                 &(struct calorific_doubt) { kind, NULL, *u, u });
+}
 
 /* ---- the question ---- */
 
@@ -103,12 +112,22 @@ make_frame (const struct calorific_tables *tables, const struct composition *gas
     .tables = tables, .gas = gas, .ask = ask, .constants = &tables->edition[ask->edition],
     .T = ask->T_metering, .combustion = place_of (ask->T_combustion, COMBUSTIONS)
   };
-  f->R = ask->by_standard ? f->constants->R : GAS_CONSTANT;
+  f->R = GAS_CONSTANT;
   if (f->combustion == COMBUSTIONS || isnan (f->constants->L[f->combustion]))
     return refuse_temperature ("combustion", ask->T_combustion, ask->edition,
                                old ? "0, 15, 20 and 25 degC" : "0, 15, 20, 25 degC and 60 degF",
                                fault);
-  return check_metering (f, fault);
+  if (!check_metering (f, fault))
+    return false;
+  const struct calorific_constants *c = f->constants;
+  if (ask->by_standard)
+    f->R = moved (f, CALORIFIC_DOUBT_R, c->R, &c->u_R);
+  f->L = moved (f, CALORIFIC_DOUBT_WATER, c->L[f->combustion], &c->u_L[f->combustion]);
+  f->air = moved (f, CALORIFIC_DOUBT_AIR, c->air_molar_mass, &c->u_air_molar_mass);
+  if (ask->real)
+    f->air_Z = moved (f, CALORIFIC_DOUBT_AIR_Z, c->air_Z[f->metering],
+                      &c->u_air_Z[f->metering]);
+  return true;
 }
 
 /* ---- the sums ---- */
@@ -129,6 +148,19 @@ summation (const struct frame *f, const struct species *species,
   fault_set (fault, MESSAGE_MODEL_LACKS, calorific_edition_name (f->ask->edition), species->key);
   fault_hint (fault, "ask for ideal volumes");
   return false;
+}
+
+static void
+move_single (const struct frame *f, const struct species *species,
+             const struct calorific_row *row, struct single *one)
+{
+  const struct calorific_moves *moves = &f->ask->moves;
+  if (moves->by == NULL)
+    return;
+  one->v[SUM_G] += calorific_move (moves, &(struct calorific_doubt) {
+      CALORIFIC_DOUBT_HEAT, species->key, one->u_H, &row->u_H });
+  one->v[SUM_S] += calorific_move (moves, &(struct calorific_doubt) {
+      CALORIFIC_DOUBT_SUMMATION, species->key, one->u_s, &row->u_s });
 }
 
 static bool
@@ -154,7 +186,11 @@ look_up (const struct frame *f, size_t i, struct single *one, struct fault *faul
       one->v[SUM_W] = 0;                 /* what does not burn makes no water */
   }
   /* What is left out of the calorific value as a trace is left out of Z.  */
-  return !f->ask->real || component == NULL || summation (f, species, component, one, fault);
+  if (f->ask->real && component != NULL && !summation (f, species, component, one, fault))
+    return false;
+  if (component != NULL)
+    move_single (f, species, &component->in[f->ask->edition], one);
+  return true;
 }
 
 /* cov += u_i r_ij u_j v_i v_j^T for this i and all j.  */
@@ -201,6 +237,7 @@ add_up (const struct frame *f, struct totals *t, struct fault *fault)
     if (f->ask->u != NULL && !add_covariance (f, i, &one, t, fault))
       return false;
   }
+  t->sum[SUM_M] += calorific_weights_move (f->tables, f->ask->edition, f->gas, &f->ask->moves);
   for (size_t k = 0; k < ATOMS; k++)
     t->cov[SUM_M][SUM_M] += t->atoms[k] * t->atoms[k] * u_atom[k] * u_atom[k];
   return true;
@@ -231,11 +268,10 @@ static const struct shape shapes[CALORIFIC_FIGURES] = {
 static void
 find_factors (const struct frame *f, const struct totals *t, double factor[])
 {
-  const struct calorific_constants *c = f->constants;
   double q = f->ask->p / STANDARD_ATMOSPHERE, S = t->sum[SUM_S], M = t->sum[SUM_M];
   double Z = f->ask->real ? 1 - q * S * S : 1;
-  double air_Z = f->ask->real ? 1 - q * (1 - c->air_Z[f->metering]) : 1;
-  double V = Z * f->R * f->T / f->ask->p, d = M / c->air_molar_mass * air_Z / Z;
+  double air_Z = f->ask->real ? 1 - q * (1 - f->air_Z) : 1;
+  double V = Z * f->R * f->T / f->ask->p, d = M / f->air * air_Z / Z;
   factor[CALORIFIC_GROSS_MOLAR] = factor[CALORIFIC_NET_MOLAR] = 1;
   factor[CALORIFIC_GROSS_MASS] = factor[CALORIFIC_NET_MASS] = 1 / M;
   factor[CALORIFIC_GROSS_VOLUME] = factor[CALORIFIC_NET_VOLUME] = 1 / V;
@@ -322,7 +358,7 @@ fill (const struct frame *f, const struct totals *t, struct calorific *found, st
   if (!check_Z (factor[CALORIFIC_Z], fault))
     return false;
   struct common common = find_common (f, t, factor[CALORIFIC_Z]);
-  double gross = t->sum[SUM_G], net = gross - t->sum[SUM_W] / 2 * common.L;
+  double gross = t->sum[SUM_G], net = gross - t->sum[SUM_W] / 2 * f->L;
   bool stated = f->ask->edition == CALORIFIC_2016;
   found->origins = t->origins;
   for (size_t i = 0; i < CALORIFIC_FIGURES; i++) {

@@ -26,6 +26,28 @@ struct calorific_tables *calorific_tables_create (const char *directory,
                                                   struct fault *) MUST_CHECK;
 void calorific_tables_destroy (struct calorific_tables *);           /* null is allowed */
 
+/* A figure of the tables that is uncertain itself.  */
+enum calorific_doubt_kind {
+  CALORIFIC_DOUBT_HEAT,       /* gross molar calorific value of a component, J/mol */
+  CALORIFIC_DOUBT_SUMMATION,  /* summation factor of a component */
+  CALORIFIC_DOUBT_ATOM,       /* an atomic weight, kg/mol: the same in every component */
+  CALORIFIC_DOUBT_R,          /* J/(mol K) */
+  CALORIFIC_DOUBT_AIR,        /* molar mass of dry air, kg/mol */
+  CALORIFIC_DOUBT_AIR_Z,      /* compression factor of dry air */
+  CALORIFIC_DOUBT_WATER       /* heat of vaporisation, J/mol */
+};
+struct calorific_doubt {
+  enum calorific_doubt_kind kind;
+  const char *of;             /* key of the component, symbol of the element; else null */
+  double u;                   /* standard uncertainty */
+  const void *what;           /* tells it apart from all others, as long as the tables last */
+};
+/* Asked for every such figure that is used: by how many standard uncertainties it is moved.  */
+struct calorific_moves {
+  double (*by) (void *with, const struct calorific_doubt *);               /* null: none is */
+  void *with;
+};
+
 struct calorific_question {
   enum calorific_edition edition;
   double T_combustion;        /* K: 0, 15, 20, 25 degC, and 60 degF (2016), within 0.01 K */
@@ -35,6 +57,7 @@ struct calorific_question {
   bool by_standard;           /* the standard's R and molar masses; else R of the SI and ours */
   const double *u;            /* standard uncertainties of the fractions, in their order; null: 0 */
   const double *correlation;  /* of the fractions with each other, row by row; null: none */
+  struct calorific_moves moves;
 };
 
 /* Units J/mol, J/kg, J/m3, kg/m3, 1, J/m3, 1, kg/mol, m3/mol.  */
@@ -74,7 +97,11 @@ bool calorific_compute (const struct calorific_tables *, const struct compositio
 enum calorific_origin calorific_origin (const struct calorific_tables *, enum calorific_edition,
                                         const struct species *);
 /* Molar mass of dry air (kg/mol) over which a relative density is taken.  */
-double calorific_air_molar_mass (const struct calorific_tables *, enum calorific_edition);
+double calorific_air_molar_mass (const struct calorific_tables *, enum calorific_edition,
+                                 const struct calorific_moves *);
+/* By how much the molar mass of a gas moves with the atomic weights, kg/mol.  */
+double calorific_weights_move (const struct calorific_tables *, enum calorific_edition,
+                               const struct composition *, const struct calorific_moves *);
 const char *calorific_edition_name (enum calorific_edition);         /* "ISO 6976:2016" */
 
 #endif

@@ -41,6 +41,10 @@ struct calorific_tables {
 };
 
 extern const double calorific_temperature[COMBUSTIONS];              /* K */
+extern const char *const calorific_atom[ATOMS];                      /* "C" */
+
+/* By how much a figure with the standard uncertainty DOUBT.u is moved; 0 where it has none.  */
+double calorific_move (const struct calorific_moves *, const struct calorific_doubt *doubt);
 
 /* Null where nothing is known of it.  */
 const struct calorific_component *calorific_find (const struct calorific_tables *,

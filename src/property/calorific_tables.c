@@ -17,7 +17,7 @@ const double calorific_temperature[COMBUSTIONS] = { 273.15, 288.15, 519.67 / 1.8
 
 static const char *const at[COMBUSTIONS] = { "0degC", "15degC", "60degF", "20degC", "25degC" };
 
-static const char *const atom_text[ATOMS] = { "C", "H", "N", "O", "S", "He", "Ne", "Ar" };
+const char *const calorific_atom[ATOMS] = { "C", "H", "N", "O", "S", "He", "Ne", "Ar" };
 
 static const char *const table_of[CALORIFIC_EDITIONS] = { "iso6976_2016", "iso6976_1995" };
 
@@ -39,7 +39,7 @@ find_columns (const struct table *table)
   struct row_columns found;
   char name[40];
   for (size_t i = 0; i < ATOMS; i++)
-    found.atoms[i] = table_column (table, atom_text[i]);
+    found.atoms[i] = table_column (table, calorific_atom[i]);
   for (size_t i = 0; i < COMBUSTIONS; i++) {
     snprintf (name, sizeof name, "Hc_%s_kJ_mol", at[i]);
     found.H[i] = table_column (table, name);
@@ -186,7 +186,8 @@ read_constants (struct calorific_tables *tables, const struct table *table,
       || !find_constant (table, edition, "M_air", &air, fault)
       || !find_constants (table, edition, "Z_air", METERINGS, at, 1, to->air_Z, to->u_air_Z, fault)
       || !find_constants (table, edition, "L", COMBUSTIONS, at, KILOJOULE, to->L, to->u_L, fault)
-      || !find_constants (table, edition, "A", ATOMS, atom_text, GRAM, NULL, to->u_atom, fault))
+      || !find_constants (table, edition, "A", ATOMS, calorific_atom, GRAM, NULL, to->u_atom,
+                          fault))
     return false;
   to->R = R.value;
   to->u_R = R.u;
@@ -246,10 +247,4 @@ calorific_origin (const struct calorific_tables *tables, enum calorific_edition 
 {
   const struct calorific_component *found = calorific_find (tables, species);
   return found == NULL ? CALORIFIC_TRACE : found->in[edition].origin;
-}
-
-double
-calorific_air_molar_mass (const struct calorific_tables *tables, enum calorific_edition edition)
-{
-  return tables->edition[edition].air_molar_mass;
 }

@@ -3,6 +3,7 @@ noinst_LIBRARIES += %D%/libproperty.a
 %C%_libproperty_a_SOURCES = \
   %D%/calorific.c \
   %D%/calorific.h \
+  %D%/calorific_doubt.c \
   %D%/calorific_formation.c \
   %D%/calorific_private.h \
   %D%/calorific_tables.c \

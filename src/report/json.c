@@ -1,10 +1,12 @@
 /* Results and faults as JSON (RFC 8259), one object a line, UTF-8, numbers in the shortest form
    that reads back equal.
 
-   A result: {"statement","answers":[{"what","label"?,"value","unit","basis","uncertainty"?}],
+   A result: {"statement","answers":[{"what","label"?,"value","unit","basis","uncertainty"?,
+       "expanded"?,"coverage"?}],
      "card"?,"further_cards"?,"help"?,"taken":[...],"notes":[...],"cautions":[...]}
    "basis" begins with wet or dry where that is known and is "" where there is none to state.  A
-   figure nobody could compute is null.  The lists hold the sentences of the text form without the
+   figure nobody could compute is null.  "uncertainty" is standard; "expanded" is that times
+   "coverage", where one is set.  The lists hold the sentences of the text form without the
    word that opens the line; what was taken ends with its bracket.
    A card: {"title","kind","columns":[heading],"rows":[{"name","values":[number, text or null]}],
      "lines":[text]}; "further_cards" holds those behind the first.
@@ -138,6 +140,12 @@ answer_add (struct text *out, const struct answer *answer)
   if (isfinite (answer->uncertainty)) {
     text_add (out, ",\"uncertainty\":");
     number_write_exact (out, answer->uncertainty);
+    if (answer->coverage > 1) {
+      text_add (out, ",\"expanded\":");
+      number (out, answer->coverage * answer->uncertainty);
+      text_add (out, ",\"coverage\":");
+      number (out, answer->coverage);
+    }
   }
   text_add_char (out, '}');
 }

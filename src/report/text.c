@@ -13,6 +13,7 @@
 #include <string.h>
 
 #include "result/result.h"
+#include "support/number.h"
 #include "support/text.h"
 
 enum { GAP_NAME = 3, GAP_UNIT = 2, GAP_MOISTURE = 3, GAP_BASIS = 4 };
@@ -59,6 +60,17 @@ plus_minus (const struct report_style *style)
   return style->unicode ? "\u00B1 " : "+/- ";
 }
 
+/* Which factor a spread is expanded by; a standard uncertainty says nothing.  */
+static void
+coverage_write (struct text *out, double coverage)
+{
+  if (coverage > 1) {
+    text_add (out, " (k=");
+    number_write_exact (out, coverage);
+    text_add_char (out, ')');
+  }
+}
+
 /* Writes the figures of all rows into FIGURES, each as "figure \0 spread \0", and measures.  */
 static struct columns
 measure (const struct report_style *style, const struct result *result, struct text *figures)
@@ -66,10 +78,12 @@ measure (const struct report_style *style, const struct result *result, struct t
   struct columns wide = { .named = rows_are_named (result) };
   for (const struct answer *a = result->answers; a != NULL; a = a->next) {
     const size_t start = figures->length;
-    const bool uncertain = figure_is_uncertain (a->value, a->uncertainty);
-    if (uncertain)
-      figure_write_uncertain (figures, a->value, figures, a->uncertainty);
-    else {
+    const double expanded = a->coverage * a->uncertainty;
+    const bool uncertain = figure_is_uncertain (a->value, expanded);
+    if (uncertain) {
+      figure_write_uncertain (figures, a->value, figures, expanded);
+      coverage_write (figures, a->coverage);
+    } else {
       figure_write (figures, style, a->value);
       text_add_char (figures, '\0');
     }

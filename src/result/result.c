@@ -25,6 +25,7 @@ result_answer (struct result *result)
   answer->unit = "";
   answer->value = (double) NAN;
   answer->uncertainty = (double) NAN;
+  answer->coverage = 1;
   *result->last_answer = answer;
   result->last_answer = &answer->next;
   return answer;

@@ -16,6 +16,7 @@ struct arena; struct balance_verdict; struct check_verdict; struct workings_reco
 struct budget_line {
   const char *what;               /* as typed: "CH4 58.2 ± 0.3 mol%" */
   const char *of;                 /* the name it is part of: "raw"; null: the question itself */
+  const char *from;               /* of a table's figure: where that is from; else null */
   double u;                       /* its standard uncertainty */
   const char *unit;               /* of u; "" for a plain number */
   double sensitivity;             /* what the figure moves by for one of that unit */
@@ -33,6 +34,7 @@ struct answer {
   double value;
   const char *unit;               /* "" for a plain number */
   double uncertainty;             /* standard, in the unit; NAN: none */
+  double coverage;                /* it is shown times this; 1: standard */
   const struct budget *budget;    /* what that is made of; or null */
   const char *moisture;           /* "dry", "wet" or null */
   const char *basis;              /* the rest: "0 degC, 101.325 kPa, ideal-gas volume"; or null */

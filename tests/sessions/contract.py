@@ -87,7 +87,7 @@ def shows(line, answer):
     unit = r"\s+" + re.escape(answer["unit"]) if answer["unit"] else ""
     # The label is any text in front; an uncertainty stands behind the unit, of two digits.
     found = re.search(r"(?:^|\s)(-?\d[\d.]*(?:e-?\d+)?)" + unit
-                      + r"\s*(?:(?:±|\+/-) ([\d.e-]+))?(?=\s|$)", line)
+                      + r"\s*(?:(?:±|\+/-) ([\d.e-]+)(?: \(k=2\))?)?(?=\s|$)", line)
     if not found:
         return False
     shown, spread = found.group(1), found.group(2)
@@ -96,7 +96,9 @@ def shows(line, answer):
     if bool(spread) != ("uncertainty" in answer):
         return False
     if spread:
-        near = answer["uncertainty"]
+        near = answer.get("expanded", answer["uncertainty"])
+        if ("(k=2)" in line) != (answer.get("coverage") == 2):
+            return False
         # End zeros of a whole number are rounding, not digits.
         last = max(last, 10.0 ** (math.floor(math.log10(near)) - 1))
         if not math.isclose(float(spread), near, rel_tol=0.051):

@@ -17,4 +17,5 @@ session_tests = \
   %D%/figures.sh \
   %D%/refused.sh \
   %D%/roundtrips.sh \
-  %D%/scenarios.sh
+  %D%/scenarios.sh \
+  %D%/uncertainty.sh

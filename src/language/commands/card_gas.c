@@ -73,7 +73,7 @@ kind_text (struct session *session, struct arena *arena, const struct compositio
 static const char *
 heat_text (struct evaluation *ev, const struct composition *gas, int figure)
 {
-  struct heat_question q = { gas, UNSTATED, UNSTATED, false };
+  struct heat_question q = { gas, UNSTATED, UNSTATED, false, STANDARD_NONE };
   const char *basis;
   double value;
   ev->fault->kind = MESSAGE_NONE;

@@ -135,6 +135,12 @@ setting_value (struct arena *arena, const struct settings *s, enum setting setti
     return temperature_text (arena, s->combustion, false);
   case SETTING_CALORIFIC_VALUES:
     return s->calorific_1995 ? "ISO 6976:1995" : "ISO 6976:2016";
+  case SETTING_PARTS:
+    return s->parts_independent ? "independent" : "closed";
+  case SETTING_CONSTANTS:
+    return s->constants_uncertain ? "uncertain" : "exact";
+  case SETTING_COVERAGE:
+    return arena_format (arena, "%.9g", s->coverage);
   case SETTING_DIGITS:
     return arena_format (arena, "%d", s->digits);
   case SETTING_COUNT:

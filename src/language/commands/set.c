@@ -35,6 +35,9 @@ touch_of (enum setting setting)
   case SETTING_BELOW_DETECTION: return TOUCH_BELOW;
   case SETTING_COMBUSTION:
   case SETTING_CALORIFIC_VALUES: return TOUCH_COMBUSTION;
+  case SETTING_PARTS:
+  case SETTING_CONSTANTS:
+  case SETTING_COVERAGE:
   case SETTING_DIGITS:
   case SETTING_COUNT: break;
   }
@@ -78,11 +81,20 @@ set_words (const struct statement *s, struct settings *new, struct fault *fault)
     new->calorific_1995 = strcmp (word, "ISO 6976:1995") == 0;
     *is_set = new->calorific_1995;
     return true;
+  case SETTING_PARTS:
+    new->parts_independent = strcmp (word, "independent") == 0;
+    *is_set = new->parts_independent;
+    return true;
+  case SETTING_CONSTANTS:
+    new->constants_uncertain = strcmp (word, "uncertain") == 0;
+    *is_set = new->constants_uncertain;
+    return true;
   case SETTING_SITE_PRESSURE:
   case SETTING_SITE_ALTITUDE:
   case SETTING_OXYGEN_IN_AIR:
   case SETTING_TOTAL_TOLERANCE:
   case SETTING_COMBUSTION:
+  case SETTING_COVERAGE:
   case SETTING_DIGITS:
   case SETTING_COUNT:
     break;
@@ -155,6 +167,10 @@ set_figure (struct session *session, const struct statement *s, struct settings 
     new->total_tolerance = v.si;
     return (v.si >= 0 && v.si <= 0.1)
            || out_of_range (s, fault, "a tolerance lies between 0 and 10 %");
+  case SETTING_COVERAGE:
+    new->coverage = v.si;
+    new->is_set[s->setting] = v.si > 1;
+    return true;
   case SETTING_DIGITS:
     new->digits = (int) v.si;
     return true;
@@ -166,6 +182,8 @@ set_figure (struct session *session, const struct statement *s, struct settings 
   case SETTING_REFERENCE_VOLUMES:
   case SETTING_BELOW_DETECTION:
   case SETTING_CALORIFIC_VALUES:
+  case SETTING_PARTS:
+  case SETTING_CONSTANTS:
   case SETTING_COUNT:
     break;
   }

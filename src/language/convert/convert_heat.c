@@ -82,12 +82,13 @@ convert_calorific (struct conversion *c)
                                        : "this figure is gross: ask for the net one by its name");
   }
   /* To a molar or mass figure the metering is of no matter.  */
-  struct heat_question q = { v->gas->closed, 288.15, STANDARD_ATMOSPHERE, false };
+  struct heat_question q = { v->gas->closed, 288.15, STANDARD_ATMOSPHERE, false, v->by };
   struct standing standing = { c->what, NULL, NULL };
   double value;
   if (by_volume) {
-    q.real = ((c->words | v->words) & WORD_REAL) != 0
-             || (c->ev->settings->real_volumes && !(c->words & WORD_IDEAL));
+    unsigned said = c->words & (WORD_REAL | WORD_IDEAL) ? c->words : v->words;
+    q.real = (said & WORD_REAL) != 0
+             || (c->ev->settings->real_volumes && !(said & WORD_IDEAL));
     evaluation_touch (c->ev, TOUCH_VOLUMES);
     metering (c, &q);
   }

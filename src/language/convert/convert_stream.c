@@ -108,7 +108,8 @@ convert_stream (struct conversion *c)
                                                                      c->ev->session->water)));
   }
   if (basis == FLOW_MASS) {
-    return conversion_add (c, stream_mass (&stream), &standing);
+    return conversion_add (c, stream.moles * constants_molar_mass (c->ev, stream.gas),
+                           &standing);
   }
   if (basis == FLOW_MOLAR) {
     return conversion_add (c, stream.moles, &standing);

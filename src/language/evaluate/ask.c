@@ -181,6 +181,7 @@ add_uncertainties (const struct evaluation *ev, const struct statement *s,
   size_t i = 0;
   for (struct answer *a = answers; a && i < figures->count; a = a->next, i++) {
     a->budget = budgets[i];
+    a->coverage = ev->settings->coverage;
     a->uncertainty = budgets[i] ? budgets[i]->uncertainty : UNSTATED;
   }
   return true;

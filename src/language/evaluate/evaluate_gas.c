@@ -51,7 +51,7 @@ gas_analysis (struct evaluation *ev, const struct gas_value *gas)
 /* Rounding in the last digits of a sum is no scaling.  */
 #define SCALING_WORTH_A_NOTE 1e-10
 
-const struct gas_value *
+struct gas_value *
 gas_of_analysis (struct evaluation *ev, const struct analysis *analysis,
                  const struct gas_value *named)
 {

@@ -311,6 +311,60 @@ part_at (const struct node *list, size_t i)
   return part ? part : list;
 }
 
+/* The parts of a list as read, or with nothing moved.  */
+static const struct analysis *
+analysis_of (struct evaluation *ev, const struct node *list, struct stated_part *parts, size_t n,
+             size_t *at)
+{
+  if (!read_parts (ev, list, parts)) {
+    return NULL;
+  }
+  if ((list->words & WORD_REAL) && !from_real_volumes (ev, list, n, parts)) {
+    fault_place (ev->fault, list->at);
+    return NULL;
+  }
+  const struct analysis *analysis = analysis_make (ev->arena, n, parts,
+                                                   (list->words & WORD_DRY) != 0, at, ev->fault);
+  if (!analysis) {
+    fault_place (ev->fault, part_at (list, *at)->at);
+  }
+  return analysis;
+}
+
+static double
+moles_in (const struct analysis *analysis)
+{
+  double total = 0;
+  for (size_t i = 0; i < analysis->count; i++) {
+    total += analysis->parts[i].amount;
+  }
+  return total;
+}
+
+/* `set parts independent`: while a part is moved the others stay, and the list is not closed again.
+   What takes the rest moves all the same, and amounts have no total to keep.                    */
+static bool
+leave_unclosed (struct evaluation *ev, const struct node *list, struct stated_part *parts,
+                size_t n, const struct analysis *moved, struct gas_value *gas)
+{
+  size_t at, shifts = ev->shift_count;
+  for (const struct node *part = list->items; part; part = part->next)
+    if (part->rest) {
+      return true;
+    }
+  if (shifts == 0 || moved->whole == WHOLE_NONE || !gas->closed) {
+    return true;
+  }
+  double total = moles_in (moved);
+  ev->shift_count = 0;
+  const struct analysis *before = analysis_of (ev, list, parts, n, &at);
+  ev->shift_count = shifts;
+  if (before) {
+    gas->closed = composition_unclosed (ev->arena, gas->closed, total / moles_in (before));
+  }
+  return before != NULL;
+}
+
 bool
 evaluate_list (struct evaluation *ev, const struct node *list, struct value *out)
 {
@@ -319,25 +373,21 @@ evaluate_list (struct evaluation *ev, const struct node *list, struct value *out
     n++;
   }
   struct stated_part *parts = ARENA_ARRAY (ev->arena, n, struct stated_part);
-  if (!read_parts (ev, list, parts)) {
-    return false;
-  }
-  if ((list->words & WORD_REAL) && !from_real_volumes (ev, list, n, parts)) {
-    fault_place (ev->fault, list->at);
-    return false;
-  }
-  const struct analysis *analysis = analysis_make (ev->arena, n, parts,
-                                                   (list->words & WORD_DRY) != 0, &at, ev->fault);
+  const struct analysis *analysis = analysis_of (ev, list, parts, n, &at);
   if (!analysis) {
-    fault_place (ev->fault, part_at (list, at)->at);
     return false;
   }
   struct gas_value named = { .name = ev->subject, .basis = list->unit, .list = list };
   *out = value_number (UNSTATED);
   out->kind = VALUE_GAS;
-  out->gas = gas_of_analysis (ev, analysis, &named);
+  struct gas_value *gas = gas_of_analysis (ev, analysis, &named);
+  if (!gas || (ev->settings->parts_independent
+               && !leave_unclosed (ev, list, parts, n, analysis, gas))) {
+    return false;
+  }
+  out->gas = gas;
   if (analysis->whole == WHOLE_MASS) {
     note (ev, MESSAGE_NOTE_BY_MASS, named.name ? named.name : "the list", NULL, NULL);
   }
-  return out->gas != NULL;
+  return true;
 }

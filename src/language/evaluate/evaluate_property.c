@@ -72,7 +72,7 @@ by_volume (struct evaluation *ev, const struct property_question *q, struct valu
     return false;
   }
   double si = q->property == PROPERTY_Z ? Z
-              : q->property == PROPERTY_MOLAR_VOLUME ? Vm : q->gas->molar_mass / Vm;
+              : q->property == PROPERTY_MOLAR_VOLUME ? Vm : constants_molar_mass (ev, q->gas) / Vm;
   if (!property_answer (ev, q, si, out)) {
     return false;
   }
@@ -182,11 +182,11 @@ partial_pressure (struct evaluation *ev, const struct property_question *q, cons
 static bool
 relative_density (struct evaluation *ev, const struct property_question *q, struct value *out)
 {
-  double air = heat_air_molar_mass (ev), d = q->gas->molar_mass / air;
+  double air = heat_air_molar_mass (ev), d = constants_molar_mass (ev, q->gas) / air;
   bool real = q->state && q->state->real;
   const char *basis = NULL;
   if (real) {
-    struct heat_question heat = { q->gas, q->state->T, q->state->p, true };
+    struct heat_question heat = { q->gas, q->state->T, q->state->p, true, STANDARD_NONE };
     if (!heat_figure (ev, &heat, CALORIFIC_RELATIVE_DENSITY, &d, &basis)) {
       fault_place (ev->fault, q->node->at);
       return false;
@@ -218,7 +218,9 @@ calorific (struct evaluation *ev, const struct property_question *q, struct valu
   out->heat = figure[q->property];
   out->T = q->state ? q->state->T : UNSTATED;
   out->p = q->state ? q->state->p : UNSTATED;
-  out->words = q->state && q->state->real ? WORD_REAL : 0;
+  out->by = q->node->a->by;
+  out->words = q->ideal ? WORD_IDEAL
+               : out->by || (q->state && q->state->real) ? WORD_REAL : 0;
   return true;
 }
 
@@ -242,13 +244,63 @@ own_figure (struct evaluation *ev, const struct property_question *q, const stru
   return property_answer (ev, q, T ? q->T : q->p, out);
 }
 
+/* What ISO 6976 has of its own; -1: nothing.  */
+static int
+figure_of_standard (enum property property)
+{
+  static const struct { enum property property; int figure; } has[] = {
+    { PROPERTY_MOLAR_MASS, CALORIFIC_MOLAR_MASS },
+    { PROPERTY_RELATIVE_DENSITY, CALORIFIC_RELATIVE_DENSITY },
+    { PROPERTY_DENSITY, CALORIFIC_DENSITY },
+    { PROPERTY_MOLAR_VOLUME, CALORIFIC_MOLAR_VOLUME },
+    { PROPERTY_Z, CALORIFIC_Z },
+    { PROPERTY_GROSS_CALORIFIC_VALUE, CALORIFIC_GROSS_VOLUME },
+    { PROPERTY_NET_CALORIFIC_VALUE, CALORIFIC_NET_VOLUME },
+    { PROPERTY_WOBBE, CALORIFIC_WOBBE },
+    { PROPERTY_NET_WOBBE, CALORIFIC_NET_WOBBE },
+  };
+  for (size_t i = 0; i < sizeof has / sizeof has[0]; i++)
+    if (has[i].property == property) {
+      return has[i].figure;
+    }
+  return -1;
+}
+
+/* Of a real gas unless an ideal one is asked for, at the state said or the conditions of Sm3.  */
+static bool
+by_standard (struct evaluation *ev, const struct property_question *q, struct value *out)
+{
+  int figure = figure_of_standard (q->property);
+  double si;
+  const char *basis = NULL;
+  if (figure < 0) {
+    return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, q->node->a->at,
+                         arena_format (ev->arena, "ISO 6976 has no %s",
+                                       property_text[q->property]), NULL);
+  }
+  if (figure == CALORIFIC_GROSS_VOLUME || figure == CALORIFIC_NET_VOLUME
+      || figure == CALORIFIC_WOBBE || figure == CALORIFIC_NET_WOBBE) {
+    return calorific (ev, q, out);
+  }
+  struct heat_question heat = { q->gas, q->T, q->p, !q->ideal, q->node->a->by };
+  if (!heat_figure (ev, &heat, figure, &si, &basis)) {
+    fault_place (ev->fault, q->node->at);
+    return false;
+  }
+  if (!property_answer (ev, q, si, out)) {
+    return false;
+  }
+  out->basis = basis;
+  return true;
+}
+
 static bool
 dispatch (struct evaluation *ev, const struct property_question *q, const struct value *of,
           struct value *out)
 {
   switch (q->property) {
   case PROPERTY_MOLAR_MASS:
-    return property_answer (ev, q, q->gas->molar_mass, out);
+    return property_answer (ev, q, constants_molar_mass (ev, q->gas), out);
   case PROPERTY_RELATIVE_DENSITY:
     return relative_density (ev, q, out);
   case PROPERTY_DENSITY:
@@ -340,5 +392,5 @@ evaluate_property (struct evaluation *ev, const struct node *node, const struct 
     q.Z = isnan (state->Z) ? q.Z : state->Z;
     q.ideal = state->ideal;
   }
-  return dispatch (ev, &q, &of, out);
+  return node->a->by ? by_standard (ev, &q, out) : dispatch (ev, &q, &of, out);
 }

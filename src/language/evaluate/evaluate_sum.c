@@ -486,7 +486,7 @@ settle_calorific (struct evaluation *ev, const struct node *node, struct value *
   if (v->kind != VALUE_CALORIFIC) {
     return true;
   }
-  struct heat_question q = { v->gas->closed, v->T, v->p, (v->words & WORD_REAL) != 0 };
+  struct heat_question q = { v->gas->closed, v->T, v->p, (v->words & WORD_REAL) != 0, v->by };
   struct value settled = value_number (UNSTATED);
   settled.unit = v->unit;
   settled.measure = measure_of_unit (v->unit);

@@ -29,7 +29,7 @@ ideal_heats (struct evaluation *ev, const struct property_question *q, struct he
   h->cp = ideal.cp;
   h->cv = ideal.cp - GAS_CONSTANT;
   h->kappa = h->cp / h->cv;
-  h->w = sqrt (h->kappa * GAS_CONSTANT * q->T / q->gas->molar_mass);
+  h->w = sqrt (h->kappa * GAS_CONSTANT * q->T / constants_molar_mass (ev, q->gas));
   h->how = "ideal gas, no effect of pressure";
   if (ideal.outside) {
     note (ev, MESSAGE_NOTE_BEYOND_RANGE, "heat capacity", ideal.outside->key, NULL);
@@ -87,7 +87,7 @@ property_caloric (struct evaluation *ev, const struct property_question *q, stru
     fault_place (ev->fault, q->node->at);
     return false;
   }
-  double M = q->gas->molar_mass;
+  double M = constants_molar_mass (ev, q->gas);
   double si = q->property == PROPERTY_CP ? h.cp / M : q->property == PROPERTY_CV ? h.cv / M
               : q->property == PROPERTY_KAPPA ? h.kappa : h.w;
   if (!property_answer (ev, q, si, out)) {

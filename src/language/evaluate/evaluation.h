@@ -15,15 +15,17 @@
 #include "support/check.h"
 #include "support/fault.h"
 
-struct arena; struct definition; struct result; struct session; struct worked;
+struct arena; struct calorific_moves; struct definition; struct eos_state; struct result;
+struct session; struct worked;
 
 /* An uncertain figure, told apart from others by the address of what it belongs to.  */
 struct source {
-  const void *what;                         /* struct spread: typed */
+  const void *what;                         /* struct spread; a figure of a table; an equation */
   double u;                                 /* standard uncertainty, in UNIT */
   const char *unit;
   const char *text;                         /* "CH4 58.2 ± 0.3 mol%" */
   const char *of;                           /* the name it is part of; null: the question */
+  const char *from;                         /* of a table's figure: where it is from; or null */
 };
 
 /* A source moved BY standard uncertainties.  */
@@ -103,6 +105,16 @@ double evaluation_moved (struct evaluation *, const struct node *, double value)
 /* The barometer as set, moved likewise.  */
 double evaluation_barometer (struct evaluation *);
 
+/* ---- Tables and equations as sources (constants.c) ---- */
+
+/* With `constants uncertain` each is moved and noted as its sources ask; else left as it is.  */
+struct calorific_moves constants_moves (struct evaluation *);
+/* Molar mass of a gas, kg/mol: by the atomic weights.  */
+double constants_molar_mass (struct evaluation *, const struct composition *);
+/* By what the density of a state is multiplied: by the published uncertainty of its equation, which
+   errs the same way wherever it is used in an answer.                                           */
+double constants_density (struct evaluation *, const struct eos_state *);
+
 /* ---- Expressions (evaluate.c) ---- */
 
 struct state;
@@ -132,8 +144,8 @@ const struct gas_value *gas_of_composition (struct evaluation *, const struct co
 /* What a gas's parts are, as stated, for its treatments.  */
 const struct analysis *gas_analysis (struct evaluation *, const struct gas_value *) MUST_CHECK;
 /* A gas from an analysis, closed if its total lets it be; NAMED says what notes call it.  */
-const struct gas_value *gas_of_analysis (struct evaluation *, const struct analysis *,
-                                         const struct gas_value *named) MUST_CHECK;
+struct gas_value *gas_of_analysis (struct evaluation *, const struct analysis *,
+                                   const struct gas_value *named) MUST_CHECK;
 /* The species a component's name stands for: one, or those of a peak not resolved (O2+Ar), or of
    a lump that is a gas of the user's (C6+).  Kinds name-unknown, name-open, kind-wrong.         */
 bool species_named (struct evaluation *, const struct node *name, struct species_set *)
@@ -180,7 +192,14 @@ bool quantity_pressure (struct evaluation *, const struct value *, const char *t
 /* ---- Heat (heat.c) ---- */
 
 /* What is asked of a gas's calorific value: at metering T, p (NAN: the conditions of Sm3).  */
-struct heat_question { const struct composition *gas; double T, p; bool real; };
+struct heat_question {
+  const struct composition *gas;
+  double T, p;
+  bool real;
+  enum standard by;                         /* with the standard's own molar masses and R */
+};
+/* Reads the tables of ISO 6976 where that was not done; false with the fault.  */
+bool heat_tables (struct evaluation *) MUST_CHECK;
 /* A figure of enum calorific_figure; *BASIS says what stands behind it.  */
 bool heat_figure (struct evaluation *, const struct heat_question *, int figure, double *value,
                   const char **basis) MUST_CHECK;

@@ -81,7 +81,7 @@ moles_per_figure (struct evaluation *ev, const struct flow_figure *f, const stru
   const char *model;
   switch (flow_basis_of (&q->measure, &flow)) {
   case FLOW_MASS:
-    *per = 1 / counted->molar_mass;
+    *per = 1 / constants_molar_mass (ev, counted);
     return true;
   case FLOW_MOLAR:
     *per = 1;

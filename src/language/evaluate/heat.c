@@ -19,8 +19,8 @@ struct burnt {
   double stated;                           /* gross or net of the rest, J per mol of gas */
 };
 
-static bool
-read_tables (struct evaluation *ev)
+bool
+heat_tables (struct evaluation *ev)
 {
   struct session *s = ev->session;
   if (!s->calorific) {
@@ -59,9 +59,19 @@ split_stated (struct evaluation *ev, const struct composition *gas, bool net,
 }
 
 static enum calorific_edition
-edition (const struct evaluation *ev)
+edition_of (const struct evaluation *ev, enum standard by)
 {
-  return ev->settings->calorific_1995 ? CALORIFIC_1995 : CALORIFIC_2016;
+  bool old = by == STANDARD_1995 || (ev->settings->calorific_1995 && by != STANDARD_2016);
+  return old ? CALORIFIC_1995 : CALORIFIC_2016;
+}
+
+/* That of 1995 states no uncertainties.  */
+static void
+note_no_uncertainties (struct evaluation *ev, enum calorific_edition edition)
+{
+  if (ev->settings->constants_uncertain && edition == CALORIFIC_1995) {
+    note (ev, MESSAGE_NOTE_CONSTANTS_UNSTATED, calorific_edition_name (edition), NULL, NULL);
+  }
 }
 
 static void
@@ -78,7 +88,8 @@ assume_combustion (struct evaluation *ev)
 
 /* Components whose figure is not the standard's own.  */
 static void
-note_origins (struct evaluation *ev, const struct composition *gas, unsigned origins)
+note_origins (struct evaluation *ev, const struct composition *gas,
+              enum calorific_edition edition, unsigned origins)
 {
   static const enum message said[CALORIFIC_ORIGINS] = {
     [CALORIFIC_OTHER_EDITION] = MESSAGE_NOTE_CALORIFIC_EDITION,
@@ -91,7 +102,7 @@ note_origins (struct evaluation *ev, const struct composition *gas, unsigned ori
     return;
   }
   for (size_t i = 0; i < gas->count; i++) {
-    enum calorific_origin origin = calorific_origin (ev->session->calorific, edition (ev),
+    enum calorific_origin origin = calorific_origin (ev->session->calorific, edition,
                                                      gas->species[i]);
     bool inert = origin == CALORIFIC_NO_FUEL
                  && strcmp (gas->species[i]->flags, "simple-asphyxiant") == 0;
@@ -106,22 +117,24 @@ known_figures (struct evaluation *ev, const struct heat_question *q,
                const struct composition *gas, struct calorific *out)
 {
   struct calorific_question ask = {
-    .edition = edition (ev), .T_combustion = ev->settings->combustion, .T_metering = q->T,
-    .p = q->p, .real = q->real };
+    .edition = edition_of (ev, q->by), .T_combustion = ev->settings->combustion,
+    .T_metering = q->T, .p = q->p, .real = q->real, .by_standard = q->by != STANDARD_NONE,
+    .moves = constants_moves (ev) };
   for (size_t i = 0; i < gas->count; i++) {
     if (gas->species[i]->origin == SPECIES_STATED) {
-      fault_set (ev->fault, MESSAGE_MODEL_LACKS, calorific_edition_name (edition (ev)),
+      fault_set (ev->fault, MESSAGE_MODEL_LACKS, calorific_edition_name (ask.edition),
                  gas->species[i]->key);
       fault_hint (ev->fault, "its compression factor was not stated: ask for ideal volumes");
       return false;
     }
   }
-  if (!read_tables (ev)
+  if (!heat_tables (ev)
       || !calorific_compute (ev->session->calorific, gas, &ask, out, ev->fault)) {
     return false;
   }
   assume_combustion (ev);
-  note_origins (ev, gas, out->origins);
+  note_no_uncertainties (ev, ask.edition);
+  note_origins (ev, gas, ask.edition, out->origins);
   return true;
 }
 
@@ -130,7 +143,7 @@ heat_per_mole (struct evaluation *ev, const struct composition *gas, bool net, d
 {
   struct burnt burnt;
   struct calorific figures;
-  struct heat_question q = { gas, 288.15, STANDARD_ATMOSPHERE, false };
+  struct heat_question q = { gas, 288.15, STANDARD_ATMOSPHERE, false, STANDARD_NONE };
   if (!split_stated (ev, gas, net, &burnt)) {
     return false;
   }
@@ -163,8 +176,8 @@ is_wobbe (int figure)
 static bool
 ideal_figure (struct evaluation *ev, const struct heat_question *q, int figure, double *value)
 {
-  double H, Vm = GAS_CONSTANT * q->T / q->p, M = q->gas->molar_mass;
-  if (!read_tables (ev) || !heat_per_mole (ev, q->gas, is_net (figure), &H)) {
+  double H, Vm = GAS_CONSTANT * q->T / q->p, M = constants_molar_mass (ev, q->gas);
+  if (!heat_tables (ev) || !heat_per_mole (ev, q->gas, is_net (figure), &H)) {
     return false;
   }
   if (figure == CALORIFIC_GROSS_MOLAR || figure == CALORIFIC_NET_MOLAR) {
@@ -172,11 +185,30 @@ ideal_figure (struct evaluation *ev, const struct heat_question *q, int figure, 
   } else if (figure == CALORIFIC_GROSS_MASS || figure == CALORIFIC_NET_MASS) {
     *value = H / M;
   } else if (is_wobbe (figure)) {
-    *value = H / Vm / sqrt (M / calorific_air_molar_mass (ev->session->calorific, edition (ev)));
+    *value = H / Vm / sqrt (M / heat_air_molar_mass (ev));
   } else {
     *value = H / Vm;
   }
   return true;
+}
+
+/* Figures of the volume that have no heat in them.  */
+static bool
+is_by_volume (int figure)
+{
+  return figure == CALORIFIC_RELATIVE_DENSITY || figure == CALORIFIC_DENSITY
+         || figure == CALORIFIC_Z || figure == CALORIFIC_MOLAR_VOLUME;
+}
+
+/* "ISO 6976:2016, its molar masses and R".  */
+static const char *
+standard_text (struct evaluation *ev, const struct heat_question *q, int figure)
+{
+  const char *name = calorific_edition_name (edition_of (ev, q->by));
+  bool volume = is_wobbe (figure) || is_by_volume (figure) || figure == CALORIFIC_GROSS_VOLUME
+                || figure == CALORIFIC_NET_VOLUME;
+  return !q->by ? name
+         : arena_format (ev->arena, "%s, its molar masses%s", name, volume ? " and R" : "");
 }
 
 static const char *
@@ -185,14 +217,19 @@ basis_text (struct evaluation *ev, const struct heat_question *q, int figure)
   bool volume = is_wobbe (figure) || figure == CALORIFIC_GROSS_VOLUME
                 || figure == CALORIFIC_NET_VOLUME;
   struct burnt parts;
-  bool stated = figure != CALORIFIC_RELATIVE_DENSITY
-                && split_stated (ev, q->gas, is_net (figure), &parts) && !parts.known;
-  const char *name = stated ? "as stated" : calorific_edition_name (edition (ev));
+  bool stated = !q->by && !is_by_volume (figure) && split_stated (ev, q->gas, is_net (figure), &parts)
+                && !parts.known;
+  const char *name = stated ? "as stated" : standard_text (ev, q, figure);
   const char *sort = is_net (figure) ? "net" : "gross";
   const char *burnt = temperature_text (ev->arena, ev->settings->combustion, false);
-  if (figure == CALORIFIC_RELATIVE_DENSITY) {
-    return arena_format (ev->arena, "%s, %s, real, %s", temperature_text (ev->arena, q->T, false),
-                         pressure_text (ev->arena, q->p, false), name);
+  if (figure == CALORIFIC_MOLAR_MASS) {
+    return name;
+  }
+  if (is_by_volume (figure)) {
+    return arena_format (ev->arena, "%s, %s, %s, %s",
+                         temperature_text (ev->arena, q->T, false),
+                         pressure_text (ev->arena, q->p, false), q->real ? "real" : "ideal",
+                         name);
   }
   if (!volume) {
     return arena_format (ev->arena, "%s, combustion %s, %s", sort, burnt, name);
@@ -213,7 +250,7 @@ heat_figure (struct evaluation *ev, const struct heat_question *asked, int figur
     q.p = ev->settings->family[FAMILY_STANDARD].at.p;
     assume_family (ev, FAMILY_STANDARD);
   }
-  if (q.real) {
+  if (q.real || q.by) {
     if (!known_figures (ev, &q, q.gas, &figures)) {
       return false;
     }
@@ -234,7 +271,10 @@ heat_air_molar_mass (struct evaluation *ev)
   struct fault unheard, *fault = ev->fault;
   fault_init (&unheard, ev->arena);
   ev->fault = &unheard;
-  bool read = read_tables (ev);
+  bool read = heat_tables (ev);
   ev->fault = fault;
-  return read ? calorific_air_molar_mass (ev->session->calorific, edition (ev)) : 28.96546e-3;
+  struct calorific_moves moves = constants_moves (ev);
+  return read ? calorific_air_molar_mass (ev->session->calorific,
+                                          edition_of (ev, STANDARD_NONE), &moves)
+              : 28.96546e-3;
 }

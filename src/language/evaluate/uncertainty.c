@@ -97,7 +97,8 @@ budget_of (const struct moving *m, size_t figure)
     }
     variance += c * c;
     lines[budget->count++] = (struct budget_line) {
-      .what = source->text, .of = source->of, .u = source->u, .unit = source->unit,
+      .what = source->text, .of = source->of, .from = source->from, .u = source->u,
+      .unit = source->unit,
       .sensitivity = source->u > 0 ? c / source->u : 0, .contribution = c, .order = i };
   }
   for (size_t i = 0; i < budget->count; i++) {

@@ -8,6 +8,7 @@
 #include <math.h>
 #include <stdbool.h>
 #include <stddef.h>
+#include "language/tree.h"
 #include "stream/stream.h"
 #include "units/dimension.h"
 #include "units/unit.h"
@@ -74,6 +75,7 @@ struct value {
                                               RATIO: by moles and by mass */
   bool flow;                               /* PART of a stream: per second */
   int heat;                                /* CALORIFIC: which figure by volume */
+  enum standard by;                        /* CALORIFIC */
   double upper;                            /* LIMITS: the second; `si` is the first */
   const struct value *top, *bottom;        /* RATIO: of what */
   double oxygen;                           /* TRACE: reference oxygen of its figure; else NAN */

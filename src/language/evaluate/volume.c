@@ -113,8 +113,9 @@ model_molar_volume (struct evaluation *ev, const struct volume_question *q, doub
     /* Of a pure substance the comparison is exact: none of it is gas.  */
     return fault_set (ev->fault, MESSAGE_STATE_LIQUID, q->gas->species[0]->key, NULL);
   }
-  *Z = state.Z;
-  *Vm = 1 / state.density;
+  double moved = constants_density (ev, &state);
+  *Z = state.Z / moved;
+  *Vm = 1 / (state.density * moved);
   *model = equation->name;
   if (ev->describe && wanted == GAS_MODEL_IDEAL && !q->ideal) {
     evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_IDEAL_SET,
@@ -122,6 +123,10 @@ model_molar_volume (struct evaluation *ev, const struct volume_question *q, doub
   }
   if (q->ideal || !ev->describe) {
     return true;
+  }
+  if (ev->settings->constants_uncertain && equation != &equation_ideal
+      && !isfinite (state.uncertainty)) {
+    note (ev, MESSAGE_NOTE_CONSTANTS_UNSTATED, equation->name, NULL, NULL);
   }
   if (!ev->settings->is_set[SETTING_GAS_MODEL]) {
     assume_choice (ev, &state, lacking);

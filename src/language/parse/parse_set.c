@@ -2,15 +2,17 @@
 #include "language/parse/parse_private.h"
 
 static const char SETTINGS[] =
-  "settings: below detection, calorific values, combustion, digits, gas model, oxygen in air,"
-  " reference volumes, site altitude, site pressure, total tolerance; or a reference unit:"
-  " set scf at T, P";
+  "settings: below detection, calorific values, combustion, constants, coverage, digits, gas model,"
+  " oxygen in air, parts, reference volumes, site altitude, site pressure, total tolerance; or a"
+  " reference unit: set scf at T, P";
 
 /* What a setting of words may be set to; null last.  */
 static const char *const gas_models[] = { "auto", "ideal", "Peng-Robinson", "GERG-2008",
                                           "AGA8-DETAIL", NULL };
 static const char *const volumes[] = { "ideal", "real", NULL };
 static const char *const limits[] = { "zero", "half", "limit", NULL };
+static const char *const parts[] = { "closed", "independent", NULL };
+static const char *const constants[] = { "exact", "uncertain", NULL };
 static const char *const standards[] = { "ISO 6976:2016", "ISO 6976:1995", NULL };
 
 static bool
@@ -56,8 +58,11 @@ parse_words (struct parser *p, struct statement *statement, const char *const *w
 static bool
 figure_fits (enum setting setting, const struct node *figure)
 {
-  enum { FEWEST_DIGITS = 3, MOST_DIGITS = 15 };
+  enum { FEWEST_DIGITS = 3, MOST_DIGITS = 15, MOST_COVERAGE = 10 };
   const struct unit *unit = figure->unit;
+  if (setting == SETTING_COVERAGE)
+    return unit == NULL && figure->spread == NULL && figure->number >= 1
+           && figure->number <= MOST_COVERAGE;
   if (setting == SETTING_DIGITS) {
     double n = figure->number;
     return unit == NULL && figure->spread == NULL && n >= FEWEST_DIGITS && n <= MOST_DIGITS
@@ -88,7 +93,8 @@ parse_figure (struct parser *p, struct statement *statement)
   struct node *figure = parse_quantity (p, IN_STATE);
   if (figure == NULL)
     return false;
-  if (figure->unit == NULL && statement->setting != SETTING_DIGITS)
+  if (figure->unit == NULL && statement->setting != SETTING_DIGITS
+      && statement->setting != SETTING_COVERAGE)
     return fail (p, MESSAGE_UNIT_EXPECTED, at, "write the unit with the figure", NULL);
   if (!figure_fits (statement->setting, figure))
     return fail_value (p, statement->setting, at);
@@ -108,10 +114,13 @@ parse_setting (struct parser *p, struct statement *statement)
   case SETTING_REFERENCE_VOLUMES: return parse_words (p, statement, volumes);
   case SETTING_BELOW_DETECTION: return parse_words (p, statement, limits);
   case SETTING_CALORIFIC_VALUES: return parse_words (p, statement, standards);
+  case SETTING_PARTS: return parse_words (p, statement, parts);
+  case SETTING_CONSTANTS: return parse_words (p, statement, constants);
   case SETTING_COMBUSTION:
     return expect_word (p, "at", "set combustion at 25 degC") && parse_figure (p, statement);
   case SETTING_SITE_PRESSURE: case SETTING_SITE_ALTITUDE: case SETTING_OXYGEN_IN_AIR:
-  case SETTING_TOTAL_TOLERANCE: case SETTING_DIGITS: case SETTING_COUNT: default:
+  case SETTING_TOTAL_TOLERANCE: case SETTING_COVERAGE: case SETTING_DIGITS: case SETTING_COUNT:
+  default:
     return parse_figure (p, statement);
   }
 }

@@ -1,6 +1,7 @@
 #include "config.h"
 #include "language/parse/parse_private.h"
 
+#include <string.h>
 #include "gas/species.h"
 
 static const char MULTIPLE[] = "a share is written in %: 5 % of mix; a multiple with *: 2 * feed";
@@ -142,6 +143,50 @@ parse_value (struct parser *p, const char *way_on)
   return NULL;
 }
 
+/* Does "by ISO 6976 [":" YEAR]" stand at BEGIN of the text?  Its end, or 0.  */
+static size_t
+standard_at (const struct parser *p, size_t begin, enum standard *by)
+{
+  static const struct { const char *text; enum standard by; } ways[] = {
+    { "by ISO 6976:2016", STANDARD_2016 }, { "by ISO 6976:1995", STANDARD_1995 },
+    { "by ISO 6976", STANDARD_AS_SET }
+  };
+  for (size_t i = 0; i < sizeof ways / sizeof ways[0]; i++) {
+    size_t n = strlen (ways[i].text);
+    if (begin + n <= p->scan.n && memcmp (p->scan.text + begin, ways[i].text, n) == 0) {
+      *by = ways[i].by;
+      return begin + n;
+    }
+  }
+  return 0;
+}
+
+/* [ "by ISO 6976" [":" YEAR] ], behind a property or behind what it is of  */
+static bool
+parse_standard (struct parser *p, struct node *property)
+{
+  static const char FORM[] = "a property goes by ISO 6976, by ISO 6976:2016 or by ISO 6976:1995";
+  if (!at_word (p, "by"))
+    return true;
+  enum standard by;
+  struct place at = p->token.at;
+  size_t end = standard_at (p, p->token.start, &by);
+  if (end == 0) {
+    token_take (p);
+    return fail_unexpected (p, FORM);
+  }
+  while (p->end < end)
+    token_take (p);
+  at.last = p->last.last;
+  if (p->end != end)
+    return fail (p, MESSAGE_WORD_UNEXPECTED, at, "by", FORM);
+  if (property == NULL)
+    return fail (p, MESSAGE_WORD_PLACE, at, "by ISO 6976",
+                 "it follows a property: wobbe of raw by ISO 6976");
+  property->by = by;
+  return true;
+}
+
 /* PROPERTY before "of"; *FOUND says whether there was one.  */
 static struct node *
 parse_property (struct parser *p, bool *found)
@@ -154,7 +199,8 @@ parse_property (struct parser *p, bool *found)
   struct look look = look_here (p);
   for (size_t i = 0; i < words; i++)
     look_next (&look);
-  bool of = token_is (p, &look.token, "of");
+  enum standard by;
+  bool of = token_is (p, &look.token, "of") || standard_at (p, look.token.start, &by) > 0;
   if (!of && words < 2)
     return NULL;                  /* a name like any other */
   *found = true;
@@ -164,7 +210,9 @@ parse_property (struct parser *p, bool *found)
   node->property = property;
   node->text = bytes_text (p, start, p->end);
   node_close (p, node);
-  if (of)
+  if (!parse_standard (p, node))
+    return NULL;
+  if (at_word (p, "of"))
     return node;
   fail_unexpected (p, arena_format (p->arena, "%s of what?", node->text));
   return NULL;
@@ -299,18 +347,30 @@ parse_at (struct parser *p, struct node *operand)
   return state != NULL ? node_link (p, NODE_AT, operand, state) : NULL;
 }
 
+/* The property an operand asks for; null: it is none.  */
+static struct node *
+property_of (struct node *operand)
+{
+  struct node *of = operand->kind == NODE_AT ? operand->a : operand;
+  return of->kind == NODE_OF && of->a->kind == NODE_PROPERTY ? of->a : NULL;
+}
+
 static struct node *
 parse_operand (struct parser *p)
 {
-  /* operand = [ "-" ] chain [ "within" NAME ] [ "at" state ]  */
+  /* operand = [ "-" ] chain [ "within" NAME ] [ standard ] [ "at" state ] [ standard ]  */
   struct place from = p->token.at;
   /* The sign of a figure belongs to it: -10 degC is a point.  */
   bool minus = !at_number (p) && accept (p, TOKEN_MINUS);
   struct node *node = parse_chain (p);
   if (node != NULL)
     node = parse_within (p, node);
+  if (node != NULL && !parse_standard (p, property_of (node)))
+    return NULL;
   if (node != NULL)
     node = parse_at (p, node);
+  if (node != NULL && !parse_standard (p, property_of (node)))
+    return NULL;
   if (node == NULL || !minus)
     return node;
   struct node *negative = node_link (p, NODE_NEGATE, node, NULL);

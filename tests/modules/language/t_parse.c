@@ -258,6 +258,25 @@ figures_carry_what_stands_behind_them (void)
 }
 
 static void
+by_a_standard (void)
+{
+  struct bench b;
+  bench_open (&b);
+  reads (&b, "wobbe of raw by ISO 6976 in MJ/m3",
+         "(ask (of wobbe-by-ISO-6976 raw) (to MJ/m3))");
+  reads (&b, "net wobbe by ISO 6976 of raw", "(ask (of net-wobbe-by-ISO-6976 raw))");
+  reads (&b, "Z of raw by ISO 6976:1995 at 0 degC, 1 atm",
+         "(ask (at (of Z-by-ISO-6976:1995 raw) (T (q 0 degC)) (P (q 1 atm))))");
+  reads (&b, "Z of raw at 0 degC, 1 atm by ISO 6976:2016",
+         "(ask (at (of Z-by-ISO-6976:2016 raw) (T (q 0 degC)) (P (q 1 atm))))");
+  fails (&b, "wobbe of raw by ISO 6974", "word-unexpected", 1, 17);
+  fails (&b, "wobbe of raw by ISO 69761", "word-unexpected", 1, 14);
+  fails (&b, "raw by ISO 6976 in mol%", "word-place", 1, 5);
+  fails (&b, "2 * wobbe of raw by", "unfinished", 1, 20);
+  bench_close (&b);
+}
+
+static void
 settings_are_read_with_their_kinds (void)
 {
   struct bench b;
@@ -265,6 +284,11 @@ settings_are_read_with_their_kinds (void)
   reads (&b, "set total tolerance 0.5 %", "(set total-tolerance (q 0.5 %))");
   reads (&b, "set scf at 60 degF, 14.696 psia",
          "(set scf (at (T (q 60 degF)) (P (q 14.696 psia))))");
+  reads (&b, "set coverage 2", "(set coverage (q 2))");
+  reads (&b, "set constants uncertain", "(set constants uncertain)");
+  reads (&b, "set parts independent", "(set parts independent)");
+  fails (&b, "set coverage 0.9", "setting-value", 1, 14);
+  fails (&b, "set coverage 11", "setting-value", 1, 14);
   fails (&b, "set digits 2", "setting-value", 1, 12);
   fails (&b, "set digits 8.5", "setting-value", 1, 12);
   fails (&b, "set digits 8 %", "setting-value", 1, 12);
@@ -463,6 +487,7 @@ mangled_lines_never_break_it (void)
 }
 
 static const struct test_case cases[] = {
+  { "a property by a standard", by_a_standard },
   { "places count in physical lines", places_count_in_physical_lines },
   { "places of nodes cover their words", places_of_nodes_cover_their_words },
   { "a statement keeps its source", a_statement_keeps_its_source },

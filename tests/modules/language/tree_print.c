@@ -273,7 +273,11 @@ print (struct text *out, const struct node *node)
     break;
   case NODE_NAME: print_name (out, node->text, node->quoted); break;
   case NODE_SITE_PRESSURE: text_add (out, "site-pressure"); break;
-  case NODE_PROPERTY: print_joined (out, property_text (node->property)); break;
+  case NODE_PROPERTY:
+    print_joined (out, property_text (node->property));
+    text_add (out, node->by == STANDARD_NONE ? "" : node->by == STANDARD_AS_SET ? "-by-ISO-6976"
+              : node->by == STANDARD_2016 ? "-by-ISO-6976:2016" : "-by-ISO-6976:1995");
+    break;
   case NODE_THAT: text_add (out, "that"); break;
   case NODE_LIST: print_list (out, node); break;
   default: print_branch (out, node); break;

@@ -235,7 +235,7 @@ biomethane (void)
   double H = propane.value[CALORIFIC_GROSS_VOLUME] / 1e6;
   double share = (39.50 - 37.10) / (H - 37.10);
   NEAR (share, 0.0422268, 1e-5);
-  double air = calorific_air_molar_mass (tables, CALORIFIC_2016);
+  double air = calorific_air_molar_mass (tables, CALORIFIC_2016, NULL);
   double M = (1 - share) * 16.70e-3 + share * propane.value[CALORIFIC_MOLAR_MASS];
   NEAR (37.10 / sqrt (16.70e-3 / air), 48.8603, 1e-5);
   NEAR (39.50 / sqrt (M / air), 50.3077, 3e-5);
