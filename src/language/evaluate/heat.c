@@ -217,8 +217,8 @@ basis_text (struct evaluation *ev, const struct heat_question *q, int figure)
   bool volume = is_wobbe (figure) || figure == CALORIFIC_GROSS_VOLUME
                 || figure == CALORIFIC_NET_VOLUME;
   struct burnt parts;
-  bool stated = !q->by && !is_by_volume (figure) && split_stated (ev, q->gas, is_net (figure), &parts)
-                && !parts.known;
+  bool stated = !q->by && !is_by_volume (figure)
+                && split_stated (ev, q->gas, is_net (figure), &parts) && !parts.known;
   const char *name = stated ? "as stated" : standard_text (ev, q, figure);
   const char *sort = is_net (figure) ? "net" : "gross";
   const char *burnt = temperature_text (ev->arena, ev->settings->combustion, false);
