@@ -7,3 +7,17 @@
 suites += %D%/t_network
 %C%_t_network_SOURCES = %D%/t_network.c
 %C%_t_network_LDADD = $(with_balance)
+
+suites += %D%/t_rank
+%C%_t_rank_SOURCES = \
+  %D%/plant.c \
+  %D%/plant.h \
+  %D%/t_rank.c
+%C%_t_rank_LDADD = $(with_balance)
+
+suites += %D%/t_system
+%C%_t_system_SOURCES = \
+  %D%/plant.c \
+  %D%/plant.h \
+  %D%/t_system.c
+%C%_t_system_LDADD = $(with_balance)
