@@ -28,8 +28,8 @@ EXTRA_DIST += %D%/numbers
 # Suites in C, one program each (tests/modules/LAYER/t_NAME), linked with the runner, the layer they
 # test and the layers beneath it: a call upward does not link.
 suites =
-with_support = %D%/libtest.a $(upto_support) $(CUNIT_LIBS)
-with_units = %D%/libtest.a $(upto_units) $(CUNIT_LIBS)
+with_support = %D%/libtest.a $(upto_support) $(CUNIT_LIBS) $(GSL_LIBS)
+with_units = %D%/libtest.a $(upto_units) $(CUNIT_LIBS) $(GSL_LIBS)
 with_gas = %D%/libtest.a $(upto_gas) $(CUNIT_LIBS) $(GSL_LIBS)
 with_eos = %D%/libtest.a $(upto_eos) $(CUNIT_LIBS) $(GSL_LIBS)
 with_property = %D%/libtest.a $(upto_property) $(CUNIT_LIBS) $(GSL_LIBS)

@@ -17,8 +17,15 @@ noinst_LIBRARIES += %D%/libsupport.a
   %D%/message.h \
   %D%/number.c \
   %D%/number.h \
+  %D%/quadratic.c \
+  %D%/quadratic.h \
   %D%/reader.c \
   %D%/reader.h \
+  %D%/search.h \
+  %D%/search_line.c \
+  %D%/search_point.c \
+  %D%/search_point.h \
+  %D%/search_settle.c \
   %D%/sum.h \
   %D%/table.c \
   %D%/table.h \

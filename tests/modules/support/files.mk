@@ -24,9 +24,21 @@ suites += %D%/t_number
 %C%_t_number_SOURCES = %D%/t_number.c
 %C%_t_number_LDADD = $(with_support)
 
+suites += %D%/t_quadratic
+%C%_t_quadratic_SOURCES = %D%/t_quadratic.c
+%C%_t_quadratic_LDADD = $(with_support)
+
 suites += %D%/t_reader
 %C%_t_reader_SOURCES = %D%/t_reader.c
 %C%_t_reader_LDADD = $(with_support)
+
+suites += %D%/t_search_line
+%C%_t_search_line_SOURCES = %D%/t_search_line.c
+%C%_t_search_line_LDADD = $(with_support)
+
+suites += %D%/t_search_settle
+%C%_t_search_settle_SOURCES = %D%/t_search_settle.c
+%C%_t_search_settle_LDADD = $(with_support)
 
 suites += %D%/t_table
 %C%_t_table_SOURCES = %D%/t_table.c
