@@ -14,6 +14,8 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/commands/set.c \
   %D%/commands/show.c \
   %D%/commands/trim.c \
+  %D%/commands/trim.h \
+  %D%/commands/trim_tell.c \
   %D%/convert/convert.c \
   %D%/convert/convert.h \
   %D%/convert/convert_heat.c \

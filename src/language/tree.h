@@ -136,10 +136,12 @@ struct stated_property { enum property property; const struct node *quantity;
 struct statement {
   enum statement_kind kind;
   const char *source;             /* as typed, without comment and outer blanks */
+  const char *typed;              /* the same with its lines kept, where it has several; or null */
   struct place at;
   const char *name;               /* what is defined, solved, shown ... */
   struct place name_at;
-  const struct node *names;       /* NODE_NAMEs of forget, trim, components */
+  const struct node *names;       /* NODE_NAMEs of forget, trim (with the ends of its range as
+                                     `a` and `b`, or null), components */
   const struct node *value;       /* the sum, list, chain or state; of normalise the whole
                                      NODE_NORMALISED; of gas from a NODE_LIST without items that
                                      has the basis, or null; of a setting its figure */

@@ -18,4 +18,5 @@ session_tests = \
   %D%/refused.sh \
   %D%/roundtrips.sh \
   %D%/scenarios.sh \
+  %D%/trims.sh \
   %D%/uncertainty.sh

@@ -1,8 +1,6 @@
 #include "config.h"
-#include "language/commands/commands.h"
+#include "language/commands/trim.h"
 
-#include <gsl/gsl_errno.h>
-#include <gsl/gsl_linalg.h>
 #include <math.h>
 #include <string.h>
 #include "language/evaluate/wording.h"
@@ -12,30 +10,59 @@
 #include "support/number.h"
 #include "support/text.h"
 
-/* Newton's method on the aims, with the slopes by finite differences and the step halved until
-   the aims come nearer (Dennis and Schnabel, Numerical Methods for Unconstrained Optimization
-   and Nonlinear Equations (1983), algorithms A5.4.1 and A6.3.1).  Quantities stay above or at
-   zero: a step that would take one below is cut short.                                          */
-enum { TRIM_STEPS = 60, TRIM_HALVINGS = 30 };
-#define TRIM_CLOSE 1e-15            /* relative miss of an aim where no step is taken any more */
-#define TRIM_ROUNDED 1e-11          /* miss that rounding to twelve digits may leave */
-#define TRIM_ROUNDING 1e-10         /* what is left where rounding ends the steps */
-#define TRIM_DIFFERENCE 1e-6        /* relative step of the finite differences */
-
-struct trim {
-  struct session *session;
-  const struct statement *statement;
-  struct arena *arena;
-  size_t count;
-  struct stand_in *moved;           /* the named quantities, with the value tried */
-  double *x, *scale;                /* in their own units */
-  struct evaluation *first;         /* where what is used is gathered */
-};
+/* Miss that rounding the quantities to twelve digits may leave.  */
+#define TRIM_ROUNDED 1e-11
 
 /* ---- What is moved ---- */
 
 static bool
-add_quantity (struct trim *t, const struct node *name, size_t i, struct fault *fault)
+wrong (struct trim *t, const struct node *name, const char *what)
+{
+  return fault_set_at (t->first->fault, MESSAGE_KIND_WRONG, name->at,
+                       arena_format (t->arena, "'%s' %s", name->text, what), NULL);
+}
+
+/* VALUE in the unit of the moved quantity I; false with the fault in FIRST.  */
+static bool
+in_its_unit (struct trim *t, const struct node *node, size_t i, double *x)
+{
+  struct value value;
+  const struct unit *unit = t->moved[i].value.unit;
+  struct figures figures = { NULL, 0, 0 };
+  struct subject subject = { "", node->at };
+  struct target target = { .unit = unit, .unit_text = unit ? unit->spelling : "", .at = node->at };
+  if (!evaluate_quantity (t->first, node, &value)
+      || !convert_value (t->first, &value, unit ? &target : NULL, &subject, &figures)) {
+    fault_place (t->first->fault, node->at);
+    return false;
+  }
+  *x = figures.at[0].value;
+  return true;
+}
+
+/* The range of a quantity: as typed, else from zero, or from the least there is on a scale that
+   goes below its zero (degC, bar(g)).                                                           */
+static bool
+add_range (struct trim *t, const struct node *name, size_t i)
+{
+  const struct unit *unit = t->moved[i].value.unit;
+  bool scaled = unit && (unit->sort == UNIT_POINT || unit->sort == UNIT_GAUGE);
+  t->least[i] = scaled ? fmin (unit_from_si (unit, 0), 0) : 0;
+  t->most[i] = HUGE_VAL;
+  if (!name->a) {
+    return true;
+  }
+  t->ranged = true;
+  if (!in_its_unit (t, name->a, i, &t->least[i]) || !in_its_unit (t, name->b, i, &t->most[i])) {
+    return false;
+  }
+  return t->least[i] < t->most[i]
+         || fault_set_at (t->first->fault, MESSAGE_RANGE, name->b->at,
+                          "a range goes from its lower end to its upper one", NULL);
+}
+
+static bool
+add_quantity (struct trim *t, const struct node *name, size_t i)
 {
   struct definition *d = name_find (t->session, name->text, strlen (name->text));
   if (!d) {
@@ -44,34 +71,46 @@ add_quantity (struct trim *t, const struct node *name, size_t i, struct fault *f
   bool typed = d->kind == NAME_QUANTITY && d->statement->value->kind == NODE_QUANTITY
                && !d->statement->value->a && !d->statement->targets;
   if (!typed) {
-    fault_set_at (fault, MESSAGE_KIND_WRONG, name->at,
-                  arena_format (t->arena, "'%s' is no figure that can be moved", name->text), NULL);
-    fault_hint (fault, "let %s = 100 kg/h", name->text);
+    wrong (t, name, "is no figure that can be moved");
+    fault_hint (t->first->fault, "let %s = 100 kg/h", name->text);
     return false;
   }
+  for (size_t k = 0; k < i; k++)
+    if (t->moved[k].definition == d) {
+      return wrong (t, name, "stands twice");
+    }
   const struct value *value = definition_value (t->first, d, name->at);
   if (!value) {
     return false;
   }
   t->moved[i] = (struct stand_in) { d, *value };
-  t->x[i] = d->statement->value->number;
-  t->scale[i] = fabs (t->x[i]) > 0 ? fabs (t->x[i]) : 1;
+  t->before[i] = t->x[i] = d->statement->value->number;
+  if (!add_range (t, name, i)) {
+    return false;
+  }
+  double range = t->most[i] < HUGE_VAL ? t->most[i] - t->least[i] : 1;
+  t->scale[i] = fabs (t->x[i]) > 1e-6 * range ? fabs (t->x[i]) : range;
+  t->x[i] = fmin (fmax (t->x[i], t->least[i]), t->most[i]);
   return true;
 }
 
+/* ---- Figures ---- */
+
 static void
-try_values (struct trim *t, const double x[])
+evaluation_at (struct trim *t, const double x[], struct evaluation *ev, struct fault *fault)
 {
   for (size_t i = 0; i < t->count; i++) {
     struct value *v = &t->moved[i].value;
     v->si = v->unit ? unit_to_si (v->unit, x[i]) : x[i];
   }
+  evaluation_again (ev, t->first, fault);
+  ev->stand_ins = t->moved;
+  ev->stand_in_count = t->count;
 }
 
-/* ---- How far the aims are missed ---- */
-
+/* Both sides of an aim, in the unit of the right one.  */
 static bool
-miss_of (struct evaluation *ev, const struct aim *aim, double *miss)
+sides_of (struct evaluation *ev, const struct aim *aim, double *value, double *aimed)
 {
   struct value left, right;
   struct figures figures = { NULL, 0, 0 };
@@ -81,7 +120,7 @@ miss_of (struct evaluation *ev, const struct aim *aim, double *miss)
   }
   struct target target = { .unit = right.unit, .unit_text = right.unit ? right.unit->spelling : "",
                            .words = right.words, .at = aim->right->at };
-  double aimed = right.unit ? unit_from_si (right.unit, right.si) : right.si;
+  *aimed = right.unit ? unit_from_si (right.unit, right.si) : right.si;
   if (!right.unit && left.kind == VALUE_RATIO) {
     left = value_number (left.moles);
   }
@@ -92,203 +131,143 @@ miss_of (struct evaluation *ev, const struct aim *aim, double *miss)
     return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, aim->left->at, "an aim is one figure",
                          NULL);
   }
-  *miss = (figures.at[0].value - aimed) / (fabs (aimed) > 0 ? fabs (aimed) : 1);
+  *value = figures.at[0].value;
   return true;
 }
 
-/* The misses with quantities X; the largest into *WORST.  */
+bool
+trim_figure (struct trim *t, const struct aim *aim, const double x[], double *value,
+             struct fault *fault)
+{
+  struct evaluation ev;
+  double aimed;
+  evaluation_at (t, x, &ev, fault);
+  return sides_of (&ev, aim, value, &aimed);
+}
+
 static bool
-misses (struct trim *t, const double x[], double r[], double *worst, struct fault *fault)
+objective_of (struct evaluation *ev, const struct node *least, double *value)
+{
+  struct value v;
+  struct figures figures = { NULL, 0, 0 };
+  struct subject subject = { "", least->at };
+  if (!evaluate (ev, least, NULL, &v)) {
+    return false;
+  }
+  if (v.kind == VALUE_RATIO) {
+    v = value_number (v.moles);
+  }
+  if (!convert_value (ev, &v, NULL, &subject, &figures)) {
+    return false;
+  }
+  if (figures.count != 1) {
+    return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, least->at,
+                         "what is least or most is one figure", NULL);
+  }
+  *value = figures.at[0].value;
+  return true;
+}
+
+/* The misses of all aims, as shares of what is aimed at, and the objective.  */
+static bool
+figures_at (struct trim *t, const double x[], double c[], double *objective, struct fault *fault)
 {
   struct evaluation ev;
   size_t i = 0;
-  try_values (t, x);
-  evaluation_again (&ev, t->first, fault);
-  ev.stand_ins = t->moved;
-  ev.stand_in_count = t->count;
-  *worst = 0;
+  evaluation_at (t, x, &ev, fault);
   for (const struct aim *aim = t->statement->aims; aim; aim = aim->next, i++) {
-    if (!miss_of (&ev, aim, &r[i])) {
+    double value, aimed;
+    if (!sides_of (&ev, aim, &value, &aimed)) {
       fault_place (fault, aim->left->at);
       return false;
     }
-    *worst = fmax (*worst, fabs (r[i]));
+    c[i] = (value - aimed) / (fabs (aimed) > 0 ? fabs (aimed) : 1);
+    c[i] = aim->is == COMPARE_AT_MOST ? -c[i] : c[i];
   }
+  if (t->statement->optimum == OPTIMUM_NONE) {
+    return true;
+  }
+  if (!objective_of (&ev, t->statement->least, objective)) {
+    fault_place (fault, t->statement->least->at);
+    return false;
+  }
+  *objective = t->statement->optimum == OPTIMUM_MOST ? -*objective : *objective;
   return true;
 }
 
-/* ---- The steps ---- */
-
+/* What the search asks for.  Nothing goes on once the user has had enough.  */
 static bool
-slopes (struct trim *t, double x[], const double r[], double jacobian[], struct fault *fault)
+asked (void *context, const double x[], double c[], double *objective)
 {
-  double *moved = ARENA_ARRAY (t->arena, t->count, double), worst;
-  for (size_t k = 0; k < t->count; k++) {
-    double was = x[k], h = TRIM_DIFFERENCE * t->scale[k];
-    x[k] = was + h;
-    bool done = misses (t, x, moved, &worst, fault);
-    x[k] = was;
-    if (!done) {
-      return false;
-    }
-    for (size_t i = 0; i < t->count; i++) {
-      jacobian[i * t->count + k] = (moved[i] - r[i]) / h;
-    }
-  }
-  return true;
+  struct trim *t = context;
+  struct fault unheard;
+  bool (*interrupted) (void) = t->session->options.interrupted;
+  t->interrupted = t->interrupted || (interrupted && interrupted ());
+  fault_init (&unheard, t->arena);
+  return !t->interrupted && figures_at (t, x, c, objective, &unheard);
 }
 
-/* Solves J s = -r; false if the aims do not depend on the quantities one by one.  */
-static bool
-solve_step (struct trim *t, double jacobian[], const double r[], double step[])
-{
-  size_t n = t->count;
-  double *b = ARENA_ARRAY (t->arena, n, double);
-  int sign;
-  for (size_t i = 0; i < n; i++) {
-    b[i] = -r[i];
-    for (size_t k = 0; k < n; k++) {
-      jacobian[i * n + k] *= t->scale[k];       /* steps in units of the scale */
-    }
-  }
-  gsl_matrix_view J = gsl_matrix_view_array (jacobian, n, n);
-  gsl_vector_view rhs = gsl_vector_view_array (b, n), s = gsl_vector_view_array (step, n);
-  gsl_permutation *p = gsl_permutation_alloc (n);
-  bool done = p && gsl_linalg_LU_decomp (&J.matrix, p, &sign) == GSL_SUCCESS;
-  double largest = 0, least = HUGE_VAL;
-  for (size_t i = 0; done && i < n; i++) {
-    double pivot = fabs (gsl_matrix_get (&J.matrix, i, i));
-    largest = fmax (largest, pivot);
-    least = fmin (least, pivot);
-  }
-  done = done && least > 1e-9 * largest
-         && gsl_linalg_LU_solve (&J.matrix, p, &rhs.vector, &s.vector) == GSL_SUCCESS;
-  gsl_permutation_free (p);
-  for (size_t k = 0; k < n; k++) {
-    step[k] *= t->scale[k];
-  }
-  return done;
-}
-
-/* Takes the step, or as much of it as brings the aims nearer; false if none does.  */
-static bool
-take_step (struct trim *t, const double step[], double r[], double *worst)
-{
-  double *x = ARENA_ARRAY (t->arena, t->count, double);
-  double *tried = ARENA_ARRAY (t->arena, t->count, double), new_worst;
-  double share = 1;
-  for (int i = 0; i < TRIM_HALVINGS; i++, share /= 2) {
-    struct fault fault;
-    fault_init (&fault, t->arena);
-    for (size_t k = 0; k < t->count; k++) {
-      x[k] = fmax (0, t->x[k] + share * step[k]);
-    }
-    if (misses (t, x, tried, &new_worst, &fault) && new_worst < *worst) {
-      memcpy (t->x, x, t->count * sizeof *x);
-      memcpy (r, tried, t->count * sizeof *r);
-      *worst = new_worst;
-      return true;
-    }
-  }
-  return false;
-}
-
-static const char *
-names_text (const struct trim *t)
-{
-  const char *names = "";
-  for (const struct node *n = t->statement->names; n; n = n->next) {
-    names = arena_format (t->arena, "%s%s%s", names, *names ? ", " : "", n->text);
-  }
-  return names;
-}
-
-static const char *
-aims_text (const struct trim *t)
-{
-  const char *aims = "";
-  for (const struct aim *a = t->statement->aims; a; a = a->next) {
-    aims = arena_format (t->arena, "%s%s%s = %s", aims, *aims ? ", " : "",
-                         node_text (t->arena, t->statement, a->left),
-                         node_text (t->arena, t->statement, a->right));
-  }
-  return aims;
-}
-
-static bool
-unreachable (struct trim *t, struct fault *fault)
-{
-  const char *nearest = "";
-  for (size_t i = 0; i < t->count; i++) {
-    nearest = arena_format (t->arena, "%s%s%s %s", nearest, i ? ", " : "",
-                            t->moved[i].definition->name, figure_text (t->arena, t->x[i]));
-  }
-  fault_set_at (fault, MESSAGE_TRIM_UNREACHABLE, t->statement->aims->left->at, aims_text (t),
-                names_text (t));
-  fault_facts (fault, nearest, NULL);
-  return false;
-}
+/* ---- The outcome ---- */
 
 /* The quantities to twelve digits, if the aims are met as well so: 900, not 899.9999999999938.  */
 static void
-drop_last_digits (struct trim *t, double r[])
+drop_last_digits (struct trim *t, const double found[])
 {
-  double *x = ARENA_ARRAY (t->arena, t->count, double), worst;
-  struct fault fault;
-  fault_init (&fault, t->arena);
+  double *x = ARENA_ARRAY (t->arena, t->count, double), objective;
+  double *c = ARENA_ARRAY (t->arena, t->aim_count, double);
   for (size_t k = 0; k < t->count; k++) {
-    double unit = fabs (t->x[k]) > 0 ? pow (10, floor (log10 (fabs (t->x[k]))) - 11) : 1;
-    x[k] = unit < 1 ? round (t->x[k] / unit) / (1 / unit) : round (t->x[k] / unit) * unit;
+    double unit = fabs (found[k]) > 0 ? pow (10, floor (log10 (fabs (found[k]))) - 11) : 1;
+    t->x[k] = found[k];
+    x[k] = unit < 1 ? round (found[k] / unit) / (1 / unit) : round (found[k] / unit) * unit;
+    x[k] = fmin (fmax (x[k], t->least[k]), t->most[k]);
   }
-  if (misses (t, x, r, &worst, &fault) && worst <= TRIM_ROUNDED) {
-    memcpy (t->x, x, t->count * sizeof *x);
+  if (!asked (t, x, c, &objective)) {
+    return;
   }
+  for (size_t i = 0; i < t->aim_count; i++)
+    if (search_miss (t->one_sided[i], c[i]) > TRIM_ROUNDED) {
+      return;
+    }
+  memcpy (t->x, x, t->count * sizeof *x);
 }
 
 static bool
-search (struct trim *t, struct fault *fault)
+search (struct trim *t, struct search_finding *found, struct fault *fault)
 {
-  size_t n = t->count;
-  double *r = ARENA_ARRAY (t->arena, n, double), *step = ARENA_ARRAY (t->arena, n, double);
-  double *jacobian = ARENA_ARRAY (t->arena, n * n, double), worst;
-  if (!misses (t, t->x, r, &worst, fault)) {
+  const struct statement *s = t->statement;
+  struct search search = { .n = t->count, .m = t->aim_count, .least = t->least, .most = t->most,
+                           .scale = t->scale, .one_sided = t->one_sided,
+                           .has_objective = s->optimum != OPTIMUM_NONE, .at = asked,
+                           .context = t, .arena = t->arena };
+  double objective, *c = ARENA_ARRAY (t->arena, t->aim_count, double);
+  if (!figures_at (t, t->x, c, &objective, fault)) {
     return false;
   }
-  for (int i = 0; i < TRIM_STEPS && worst > TRIM_CLOSE; i++) {
-    bool (*interrupted) (void) = t->session->options.interrupted;
-    if (interrupted && interrupted ()) {
-      return fault_set_at (fault, MESSAGE_INTERRUPTED, t->statement->at, NULL, NULL);
-    }
-    if (!slopes (t, t->x, r, jacobian, fault)) {
-      return false;
-    }
-    if (!solve_step (t, jacobian, r, step)) {
-      return fault_set_at (fault, MESSAGE_TRIM_SINGULAR, t->statement->names->at, names_text (t),
-                           aims_text (t));
-    }
-    if (!take_step (t, step, r, &worst)) {
-      break;
-    }
+  enum search_end end = t->count == 1 ? search_line (&search, t->x[0], found)
+                                      : search_settle (&search, t->x, found);
+  if (t->interrupted) {
+    return fault_set_at (fault, MESSAGE_INTERRUPTED, s->at, NULL, NULL);
   }
-  if (worst > TRIM_ROUNDING) {
-    return unreachable (t, fault);
+  switch (end) {
+  case SEARCH_FOUND: break;
+  case SEARCH_SINGULAR:
+    return fault_set_at (fault, MESSAGE_TRIM_SINGULAR, s->names->at, trim_names (t),
+                         trim_aims (t));
+  case SEARCH_UNBOUNDED: return trim_unbounded (t, fault);
+  case SEARCH_UNREACHABLE: case SEARCH_UNDEFINED: default:
+    return trim_unreachable (t, found, fault);
   }
-  drop_last_digits (t, r);
+  drop_last_digits (t, found->x);
   return true;
 }
-
-/* ---- Keeping the outcome ---- */
 
 static bool
 keep (struct trim *t, struct result *result, struct fault *fault)
 {
-  for (size_t i = 0; i < t->count; i++) {
+  const struct node *name = t->statement->names;
+  for (size_t i = 0; i < t->count; i++, name = name->next) {
     const struct definition *d = t->moved[i].definition;
-    const struct node *name = t->statement->names;
     struct text source;
-    for (size_t k = 0; k < i; k++) {
-      name = name->next;
-    }
     struct statement from = { .kind = STATEMENT_LET, .name = d->name, .name_at = name->at,
                               .source = "", .at = t->statement->at };
     text_init (&source);
@@ -305,39 +284,104 @@ keep (struct trim *t, struct result *result, struct fault *fault)
   return true;
 }
 
-static void
-tell (struct trim *t, const double before[], struct result *result)
+/* Asks for LEFT, so that what was aimed at stands there with its basis.  */
+static bool
+ask_for (struct trim *t, const struct node *left, const struct target *target,
+         struct result *result, struct fault *fault)
 {
-  for (size_t i = 0; i < t->count; i++) {
-    const struct value *v = &t->moved[i].value;
-    struct answer *a = result_answer (result);
-    a->what = arena_string (t->arena, t->moved[i].definition->name);
-    a->value = t->x[i];
-    a->unit = v->unit ? v->unit->spelling : "";
-    a->basis = arena_format (t->arena, "was %s", figure_text (t->arena, before[i]));
+  struct target *targets = target ? ARENA_NEW (t->arena, struct target) : NULL;
+  struct statement question = { .kind = STATEMENT_ASK, .source = t->statement->source,
+                                .typed = t->statement->typed,
+                                .at = t->statement->at, .value = left, .targets = targets };
+  struct answer **behind = result->last_answer;
+  if (target) {
+    *targets = *target;
   }
-  result_remark (result, MESSAGE_NOTE_TRIM_MET, aims_text (t), NULL);
+  if (!ask (t->session, &question, result, fault)) {
+    return false;
+  }
+  for (struct answer *a = *behind; a; a = a->next) {
+    a->named = true;
+  }
+  return true;
 }
 
-/* Only aims that are equalities, as many as quantities: a choice of one point.  */
+/* Is it one of the quantities, which stand there already?  */
 static bool
-is_determined (const struct trim *t, struct fault *fault)
+is_moved (const struct trim *t, const struct node *left)
+{
+  for (size_t i = 0; i < t->count; i++)
+    if (left->kind == NODE_NAME && strcmp (left->text, t->moved[i].definition->name) == 0) {
+      return true;
+    }
+  return false;
+}
+
+/* Every figure aimed at, once, in the unit it was aimed at in; and what was to be best.  */
+static bool
+ask_for_aims (struct trim *t, struct result *result, struct fault *fault)
 {
   const struct statement *s = t->statement;
-  size_t aims = 0;
-  if (s->optimum != OPTIMUM_NONE) {
-    return fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->least->at, "trim with least or most",
-                         NULL);
-  }
-  for (const struct aim *a = s->aims; a; a = a->next, aims++)
-    if (a->is != COMPARE_EQUAL) {
-      return fault_set_at (fault, MESSAGE_NOT_AVAILABLE, a->right->at,
-                           "trim with at least or at most", NULL);
+  const struct node *before = NULL;
+  for (const struct aim *aim = s->aims; aim; before = aim->left, aim = aim->next) {
+    struct value right;
+    struct evaluation ev;
+    evaluation_init (&ev, t->session, aim->right->kind == NODE_QUANTITY ? NULL : result, fault);
+    if (aim->left == before || is_moved (t, aim->left)) {
+      continue;
     }
-  return aims == t->count
-         || fault_set_at (fault, MESSAGE_KIND_WRONG, s->names->at,
-                          arena_format (t->arena, "as many aims as quantities: here %zu for %zu",
-                                        aims, t->count), NULL);
+    if (!evaluate_quantity (&ev, aim->right, &right)) {
+      return false;
+    }
+    struct target target = { .unit = right.unit, .at = aim->right->at, .words = right.words,
+                             .unit_text = right.unit ? right.unit->spelling : "" };
+    if (!ask_for (t, aim->left, right.unit ? &target : NULL, result, fault)) {
+      return false;
+    }
+  }
+  bool apart = s->optimum != OPTIMUM_NONE && s->least->kind != NODE_NAME;
+  return !apart || ask_for (t, s->least, NULL, result, fault);
+}
+
+/* Equalities alone: as many as quantities, a choice of one point.  */
+static bool
+is_determined (struct trim *t, struct fault *fault)
+{
+  const struct statement *s = t->statement;
+  size_t equalities = 0, i = 0;
+  for (const struct aim *a = s->aims; a; a = a->next, i++) {
+    t->one_sided[i] = a->is != COMPARE_EQUAL;
+    equalities += a->is == COMPARE_EQUAL;
+  }
+  bool free = s->optimum != OPTIMUM_NONE || equalities < t->aim_count;
+  if (free ? equalities <= t->count : equalities == t->count) {
+    return true;
+  }
+  fault_set_at (fault, MESSAGE_KIND_WRONG, s->names->at,
+                arena_format (t->arena, "as many aims as quantities: here %zu for %zu",
+                              equalities, t->count), NULL);
+  if (equalities < t->count) {
+    fault_hint (fault, "or say which of the values that do: with least %s",
+                name_text (t->arena, s->names->text));
+  }
+  return false;
+}
+
+static void
+make_room (struct trim *t)
+{
+  for (const struct node *n = t->statement->names; n; n = n->next) {
+    t->count++;
+  }
+  for (const struct aim *a = t->statement->aims; a; a = a->next) {
+    t->aim_count++;
+  }
+  t->moved = ARENA_ARRAY (t->arena, t->count, struct stand_in);
+  t->one_sided = ARENA_ARRAY (t->arena, t->aim_count, bool);
+  double **figures[] = { &t->x, &t->before, &t->scale, &t->least, &t->most };
+  for (size_t i = 0; i < sizeof figures / sizeof figures[0]; i++) {
+    *figures[i] = ARENA_ARRAY (t->arena, t->count, double);
+  }
 }
 
 bool
@@ -345,34 +389,29 @@ command_trim (struct session *session, const struct statement *s, struct result 
               struct fault *fault)
 {
   struct evaluation first;
+  struct search_finding found;
   struct trim t = { .session = session, .statement = s, .arena = result->arena, .first = &first };
-  evaluation_init (&first, session, NULL, fault);
-  for (const struct node *n = s->names; n; n = n->next) {
-    t.count++;
-  }
-  t.moved = ARENA_ARRAY (t.arena, t.count, struct stand_in);
-  t.x = ARENA_ARRAY (t.arena, t.count, double);
-  t.scale = ARENA_ARRAY (t.arena, t.count, double);
-  double *before = ARENA_ARRAY (t.arena, t.count, double);
   size_t i = 0;
+  evaluation_init (&first, session, NULL, fault);
+  make_room (&t);
   if (!is_determined (&t, fault)) {
     return false;
   }
-  for (const struct node *n = s->names; n; n = n->next, i++) {
-    if (!add_quantity (&t, n, i, fault)) {
+  for (const struct node *n = s->names; n; n = n->next, i++)
+    if (!add_quantity (&t, n, i)) {
       return false;
     }
-    before[i] = t.x[i];
-  }
-  if (!search (&t, fault)) {
+  if (!search (&t, &found, fault)) {
     return false;
   }
-  tell (&t, before, result);
+  bool moved = memcmp (t.x, t.before, t.count * sizeof *t.x) != 0;
   undo_group_open (session);
-  if (!keep (&t, result, fault)) {
+  trim_answer (&t, result);
+  if ((moved && !keep (&t, result, fault)) || !ask_for_aims (&t, result, fault)) {
     undo_group_drop (session);
     return false;
   }
   undo_group_close (session);
+  trim_tell (&t, &found, moved, result);
   return true;
 }

@@ -98,28 +98,37 @@ name_text (struct arena *arena, const char *name)
   return plain ? name : arena_format (arena, "\"%s\"", name);
 }
 
+/* Where in a statement's source a column of a line stands; null: not in it.  */
+static const char *
+source_at (const struct statement *statement, int line, int column)
+{
+  const char *at = statement->typed ? statement->typed : statement->source;
+  int here = statement->at.first;
+  for (int l = statement->at.line; at && l < line; l++) {
+    at = strchr (at, '\n');
+    at = at ? at + 1 : NULL;
+    here = 1;
+  }
+  if (!at || column < here || line < statement->at.line) {
+    return NULL;
+  }
+  for (; here < column && *at; here++) {
+    do {
+      at++;
+    } while (((unsigned char) *at & 0xC0) == 0x80);
+  }
+  return at;
+}
+
 const char *
 node_text (struct arena *arena, const struct statement *statement, const struct node *node)
 {
   if (node->kind == NODE_NAME) {
     return node->quoted ? name_text (arena, node->text) : node->text;
   }
-  if (node->at.line != statement->at.line || node->at.first < statement->at.first) {
-    return statement->source;
-  }
-  const char *from = statement->source;
-  for (int i = statement->at.first; i < node->at.first && *from; i++) {
-    do {
-      from++;
-    } while (((unsigned char) *from & 0xC0) == 0x80);
-  }
-  const char *to = from;
-  for (int i = node->at.first; i <= node->at.last && *to; i++) {
-    do {
-      to++;
-    } while (((unsigned char) *to & 0xC0) == 0x80);
-  }
-  return arena_copy (arena, from, (size_t) (to - from));
+  const char *from = source_at (statement, node->at.line, node->at.first);
+  const char *to = source_at (statement, node->at.line, node->at.last + 1);
+  return from && to ? arena_copy (arena, from, (size_t) (to - from)) : statement->source;
 }
 
 static void

@@ -133,6 +133,8 @@ parser_next (struct parser *p, struct statement **out, struct fault *fault)
     return false;
   }
   statement->source = source_of (p);
+  if (p->first.at.line != p->last.line)
+    statement->typed = arena_copy (p->arena, p->scan.text + p->begin, p->end - p->begin);
   struct place at = p->first.at;
   at.last = at.line == p->last.line ? p->last.last : at.last;
   statement->at = at;

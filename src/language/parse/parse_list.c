@@ -105,7 +105,7 @@ fail_amount (struct parser *p, const struct node *name)
     return fail_amount_word (p, name);
   case TOKEN_NUMBER: case TOKEN_TEXT: case TOKEN_SIGN: case TOKEN_PLUS: case TOKEN_TIMES:
   case TOKEN_OVER: case TOKEN_SPREAD: case TOKEN_COMMA: case TOKEN_OPEN: case TOKEN_CLOSE:
-  case TOKEN_LESS: case TOKEN_AT_LEAST: case TOKEN_BAD: default:
+  case TOKEN_LESS: case TOKEN_AT_LEAST: case TOKEN_RANGE: case TOKEN_BAD: default:
     return fail_here (p, MESSAGE_AMOUNT_MISSING, name->text, NULL);
   }
 }

@@ -278,7 +278,7 @@ parse_head (struct parser *p, bool behind_of)
   case TOKEN_END: case TOKEN_SEMICOLON: case TOKEN_SIGN: case TOKEN_PLUS:
   case TOKEN_TIMES: case TOKEN_OVER: case TOKEN_SPREAD: case TOKEN_EQUALS: case TOKEN_COMMA:
   case TOKEN_COLON: case TOKEN_CLOSE: case TOKEN_LESS: case TOKEN_AT_MOST: case TOKEN_AT_LEAST:
-  case TOKEN_BAD: default:
+  case TOKEN_RANGE: case TOKEN_BAD: default:
     node = fail_head (p, behind_of);
     break;
   }
@@ -308,12 +308,26 @@ parse_chain (struct parser *p)
   return parse_chain_link (p, false);
 }
 
+/* Is this the `within` of an aim, LEAST .. MOST behind it, and not that of a trace?  */
+static bool
+at_range (const struct parser *p)
+{
+  struct look look = look_here (p);
+  look_next (&look);
+  if (look.token.kind == TOKEN_NUMBER || look.token.kind == TOKEN_OPEN
+      || look.token.kind == TOKEN_MINUS)
+    return true;
+  look_next (&look);
+  return look.token.kind == TOKEN_RANGE || token_is (p, &look.token, "to");
+}
+
 /* [ "within" NAME ]  */
 static struct node *
 parse_within (struct parser *p, struct node *trace)
 {
-  if (!accept_word (p, "within"))
+  if (!at_word (p, "within") || (p->aim_left && at_range (p)))
     return trace;
+  token_take (p);
   if (!at_name (p)) {
     fail_unexpected (p, "within names the gas that holds the trace; a tolerance is written +/- on"
                      " the stated figure");

@@ -3,6 +3,58 @@
 
 static const char FORM[] = "trim NAME so WHAT = FIGURE";
 
+/* ".." | "to"  */
+static bool
+expect_range (struct parser *p, const char *way_on)
+{
+  return accept (p, TOKEN_RANGE) || expect_word (p, "to", way_on);
+}
+
+/* A unit behind both figures of a range belongs to both: 48 .. 51 MJ/m3.  */
+static void
+share_unit (struct node *least, const struct node *most)
+{
+  if (least->kind != NODE_QUANTITY || most->kind != NODE_QUANTITY || least->a != NULL
+      || least->unit != NULL || most->unit == NULL)
+    return;
+  least->unit = most->unit;
+  least->unit_text = most->unit_text;
+  least->unit_at = most->unit_at;
+  least->words = most->words;
+}
+
+/* NAME [ "from" value ( ".." | "to" ) value ]  */
+static struct node *
+parse_moved (struct parser *p)
+{
+  static const char range[] = "trim NAME from 0 kg/h to 500 kg/h so ...";
+  struct node *name = parse_name (p, FORM);
+  if (name == NULL || !accept_word (p, "from"))
+    return name;
+  name->a = parse_value (p, range);
+  if (name->a == NULL || !expect_range (p, range))
+    return NULL;
+  name->b = parse_value (p, range);
+  if (name->b == NULL)
+    return NULL;
+  share_unit (name->a, name->b);
+  return name;
+}
+
+/* What is moved, one or more.  */
+static struct node *
+parse_all_moved (struct parser *p)
+{
+  struct node *first = NULL, **link = &first;
+  do {
+    *link = parse_moved (p);
+    if (*link == NULL)
+      return NULL;
+    link = &(*link)->next;
+  } while (accept_comma (p));
+  return first;
+}
+
 /* ( "=" | "at least" | "at most" ), also <= and >=  */
 static bool
 parse_comparison (struct parser *p, enum comparison *is)
@@ -26,19 +78,51 @@ parse_comparison (struct parser *p, enum comparison *is)
   return true;
 }
 
+/* The right side of an aim: a sum without an open "at".  */
+static struct node *
+parse_aimed (struct parser *p)
+{
+  p->aim_right = true;
+  struct node *sum = parse_sum (p);
+  p->aim_right = false;
+  return sum;
+}
+
+/* sum ( ".." | "to" ) sum, behind "within": two aims, the second one linked to the first.  */
+static struct aim *
+parse_range (struct parser *p, struct aim *aim)
+{
+  struct aim *upper = ARENA_NEW (p->arena, struct aim);
+  struct node *least = parse_aimed (p);
+  if (least == NULL
+      || !expect_range (p, "wobbe of mix within 48 MJ/m3 .. 51 MJ/m3"))
+    return NULL;
+  struct node *most = parse_aimed (p);
+  if (most == NULL)
+    return NULL;
+  share_unit (least, most);
+  *upper = (struct aim) { .left = aim->left, .right = most, .is = COMPARE_AT_MOST };
+  aim->is = COMPARE_AT_LEAST;
+  aim->right = least;
+  aim->next = upper;
+  return aim;
+}
+
 static struct aim *
 parse_aim (struct parser *p)
 {
-  /* aim = sum ( "=" | "at least" | "at most" ) sum  -- the right side without an open "at"  */
+  /* aim = sum ( ( "=" | "at least" | "at most" ) sum | "within" sum ( ".." | "to" ) sum )
+     -- the right side without an open "at"  */
   struct aim *aim = ARENA_NEW (p->arena, struct aim);
   p->aim_left = true;
   aim->left = parse_sum (p);
-  if (aim->left == NULL || !parse_comparison (p, &aim->is))
+  bool within = aim->left != NULL && accept_word (p, "within");
+  if (aim->left == NULL || (!within && !parse_comparison (p, &aim->is)))
     return NULL;
   p->aim_left = false;
-  p->aim_right = true;
-  aim->right = parse_sum (p);
-  p->aim_right = false;
+  if (within)
+    return parse_range (p, aim);
+  aim->right = parse_aimed (p);
   return aim->right != NULL ? aim : NULL;
 }
 
@@ -51,7 +135,8 @@ parse_aims (struct parser *p)
     *link = parse_aim (p);
     if (*link == NULL)
       return NULL;
-    link = &(*link)->next;
+    while (*link != NULL)
+      link = &(*link)->next;
   } while (accept_comma (p));
   return first;
 }
@@ -59,8 +144,8 @@ parse_aims (struct parser *p)
 bool
 parse_trim (struct parser *p, struct statement *statement)
 {
-  /* "trim" NAME { "," NAME } "so" aim { "," aim } [ "with" ( "least" | "most" ) sum ]  */
-  statement->names = parse_names (p, FORM);
+  /* "trim" moved { "," moved } "so" aim { "," aim } [ "with" ( "least" | "most" ) sum ]  */
+  statement->names = parse_all_moved (p);
   if (statement->names == NULL || !expect_word (p, "so", FORM))
     return false;
   statement->aims = parse_aims (p);

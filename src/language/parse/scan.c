@@ -351,6 +351,12 @@ scan_sign (struct scanner *s, struct token *t)
       return;
     }
     break;
+  case '.':
+    if (next == '.' && byte_at (s, s->offset + 2) != '.') {
+      sign (s, t, TOKEN_RANGE, 2);
+      return;
+    }
+    break;
   default: break;
   }
   s->offset++;

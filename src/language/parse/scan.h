@@ -16,6 +16,7 @@ enum token_kind {
   TOKEN_SIGN,                     /* what opens a unit and is no letter: % degree micro */
   TOKEN_PLUS, TOKEN_MINUS, TOKEN_TIMES, TOKEN_OVER, TOKEN_SPREAD, TOKEN_EQUALS, TOKEN_COMMA,
   TOKEN_COLON, TOKEN_OPEN, TOKEN_CLOSE, TOKEN_LESS, TOKEN_AT_MOST, TOKEN_AT_LEAST,
+  TOKEN_RANGE,                    /* between the ends of a range: 48 .. 51 */
   TOKEN_BAD
 };
 

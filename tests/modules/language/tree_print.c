@@ -382,7 +382,17 @@ print_trim (struct text *out, const struct statement *s)
 {
   static const char *const signs[] = { "=", ">=", "<=" };
   text_add (out, "(trim (names");
-  print_each (out, s->names);
+  for (const struct node *name = s->names; name != NULL; name = name->next) {
+    text_add_char (out, ' ');
+    print (out, name);
+    if (name->a != NULL) {
+      text_add (out, " (from ");
+      print (out, name->a);
+      text_add_char (out, ' ');
+      print (out, name->b);
+      text_add_char (out, ')');
+    }
+  }
   text_add_char (out, ')');
   for (const struct aim *aim = s->aims; aim != NULL; aim = aim->next) {
     text_add_format (out, " (%s ", signs[aim->is]);

@@ -1,0 +1,184 @@
+"""Quantities moved to an aim: against closed forms, against bisection of our own on mixing rules
+written out here, and, where a best value is asked for, against every corner of the linear problem.
+All problems come from one fixed seed."""
+import itertools
+import random
+import re
+import sys
+
+import session
+
+SEED = 20240614
+TOLERANCE = 1e-9
+
+
+def last(statements):
+    """The object of the last statement."""
+    return session.answers(statements)[-1]
+
+
+def values(thing):
+    """The answers of an object by what they are of."""
+    return {answer["what"]: answer["value"] for answer in thing.get("answers", [])}
+
+
+def dilution(tap, rng):
+    """q = Q (c - d)/(c0 - c): a component balance of two gases."""
+    for i in range(20):
+        flow, cylinder = rng.uniform(1, 5000), rng.uniform(100, 5000)
+        diluent = rng.uniform(0, 1)
+        aim = rng.uniform(diluent + 1, cylinder - 1)
+        thing = last("""set gas model ideal
+gas cal = NO %r ppm, N2 rest mol%%
+gas dil = NO %r ppm, N2 rest mol%%
+let span = %r NL/min
+stream made = span of cal + %r NL/min of dil
+trim span so NO of made = %r ppm
+""" % (cylinder, diluent, rng.uniform(0.01, 5000), flow, aim))
+        want = flow * (aim - diluent) / (cylinder - aim)
+        wrong = session.off(values(thing).get("span"), want, TOLERANCE)
+        tap.tell(wrong, "dilution %d, seed %d" % (i, SEED))
+
+
+def bisect(function, low, high):
+    """The root of a rising function."""
+    for _ in range(200):
+        middle = (low + high) / 2
+        low, high = (middle, high) if function(middle) < 0 else (low, middle)
+    return (low + high) / 2
+
+
+def wobbe(tap, rng):
+    """W = H/sqrt(d): by volume, both mix linearly in an ideal gas (ISO 6976:2016, 7 and 9)."""
+    pure = session.figures(session.answers("""gas base = CH4 95, CO2 3, N2 2 mol%
+gross calorific value of base in MJ/m3 as H0
+gross calorific value of C3H8 in MJ/m3 as H1
+molar mass of base in g/mol as M0
+molar mass of C3H8 in g/mol as M1
+relative density of base
+"""))
+    H0, H1, M0, M1, d0 = (pure[name][0]["value"] for name in
+                          ("H0", "H1", "M0", "M1", "relative density of base"))
+    for i in range(12):
+        flow, aim = rng.uniform(10, 3000), rng.uniform(47.5, 70)
+
+        def index(dose, flow=flow, aim=aim):
+            x = dose / (dose + flow)
+            mass = (M0 + x * (M1 - M0)) / M0 * d0
+            return (H0 + x * (H1 - H0)) / mass ** 0.5 - aim
+
+        thing = last("""gas base = CH4 95, CO2 3, N2 2 mol%%
+let dose = %r Sm3/h
+stream mix = %r Sm3/h of base + dose of C3H8
+trim dose so wobbe of mix = %r MJ/m3
+""" % (rng.uniform(1, 500), flow, aim))
+        # An ideal gas has the relative density of its molar mass: air's cancels out.
+        wrong = session.off(values(thing).get("dose"), bisect(index, 0, 1e6), 1e-8)
+        tap.tell(wrong, "wobbe index %d, seed %d" % (i, SEED))
+
+
+def solve_two(a, b, c, d, e, f):
+    """x, y of  a x + b y = c,  d x + e y = f; none if they depend on each other."""
+    determinant = a * e - b * d
+    if abs(determinant) < 1e-12:
+        return None
+    return (c * e - b * f) / determinant, (a * f - c * d) / determinant
+
+
+def best_corner(rows, cost):
+    """The least cost over the corners of  r x + s y >= t."""
+    least = None
+    for one, other in itertools.combinations(rows, 2):
+        point = solve_two(*one, *other)
+        if point is None or any(r * point[0] + s * point[1] < t - 1e-9 for r, s, t in rows):
+            continue
+        value = cost[0] * point[0] + cost[1] * point[1]
+        least = value if least is None else min(least, value)
+    return least
+
+
+def corners(tap, rng):
+    """Two doses into a stream, limits on what the blend holds, at the least cost: linear."""
+    for i in range(15):
+        flow, limit, floor = rng.uniform(100, 900), rng.uniform(4, 12), rng.uniform(1, 6)
+        price = rng.uniform(0.3, 3), rng.uniform(0.3, 3)
+        thing = last("""set gas model ideal
+gas sour = CO2 15, CH4 85 mol%%
+let n = %r kmol/h
+let h = %r kmol/h
+stream mix = %r kmol/h of sour + n of N2 + h of H2
+trim n, h so CO2 of mix at most %r mol%% and H2 of mix at least %r mol%% \\
+ with least %r * n + %r * h
+""" % (rng.uniform(1, 100), rng.uniform(1, 100), flow, limit, floor, *price))
+        # 15 F <= l (F + n + h);  100 h >= f (F + n + h);  n, h >= 0
+        rows = [(limit, limit, (15 - limit) * flow), (-floor, 100 - floor, floor * flow),
+                (1, 0, 0), (0, 1, 0)]
+        got = values(thing)
+        found = price[0] * got["n"] + price[1] * got["h"] if "n" in got else None
+        tap.tell(session.off(found, best_corner(rows, price), 1e-7),
+                 "least cost %d, seed %d" % (i, SEED))
+        named = [what for what in got if "*" in what]
+        wrong = session.off(got.get(named[0]), found, 1e-9) if named else "no row of its own"
+        tap.tell(wrong, "least cost %d has a row" % i)
+
+
+def several_values(tap):
+    """(x - 2)(x - 3) by hand."""
+    thing = last("let x = 2.9\ntrim x from 0 to 10 so x * x - 5 * x = -6\n")
+    tap.tell(session.off(values(thing).get("x"), 3, TOLERANCE), "the nearest of two roots")
+    told = [line for line in thing["taken"] if re.search(r"that do \(2, 3\)", line)]
+    tap.tell("" if told else str(thing), "both roots are told")
+    thing = last("let x = 2.9\ntrim x so x * x - 5 * x at least -6 with most x\n")
+    tap.tell("" if thing.get("error", {}).get("kind") == "trim-unbounded" else str(thing),
+             "no end is said")
+    thing = last("let x = 2.9\ntrim x so x * x - 5 * x at most -6 with most x\n")
+    tap.tell(session.off(values(thing).get("x"), 3, TOLERANCE), "the most of a stretch")
+    told = [line for line in thing["notes"] if line.endswith("values of x that do: 2 to 3")]
+    tap.tell("" if told else str(thing), "the stretch is told")
+    thing = last("let x = 1; let y = 2\ntrim x, y so x + 2 * y = 10\n")
+    tap.tell("" if "error" in thing else str(thing), "one equality for two is refused")
+    thing = last("let x = 1; let y = 2\ntrim x, y so x + 2 * y at least 10\n")
+    # (x - 1)^2 + ((y - 2)/2)^2 is least on x + 2 y = 10 at x = 1 + 5/17, by hand.
+    tap.tell(session.off(values(thing).get("x"), 1 + 5 / 17, 1e-7), "moved as little as does")
+    thing = last("let x = 1; let y = 4\ntrim x, y so x * x + y * y = 25 and x + y = 7\n")
+    tap.tell(session.off(values(thing).get("x"), 3, TOLERANCE), "a circle and a line")
+    told = [line for line in thing["taken"] if "x 4, y 3" in line]
+    tap.tell("" if told else str(thing), "the other point is told")
+
+
+def session_follows(tap):
+    """Names keep what was found, what leans on them follows, one undo takes it back."""
+    objects = session.answers("""let a = 10 kmol/h; let b = 10 kmol/h
+stream mix = a of N2 + b of O2
+trim a, b so mix = 100 kmol/h, O2 of mix = 21 mol%
+a in kmol/h as a1
+O2 of mix in kmol/h as o1
+undo
+a in kmol/h as a2
+b in kmol/h as b2
+trim a so O2 of mix = 120 mol%
+a in kmol/h as a3
+""")
+    found = {label: answer["value"] for label, (answer, _) in
+             ((answer.get("label"), (answer, thing)) for thing in objects
+              for answer in thing.get("answers", [])) if label}
+    for label, want in (("a1", 79), ("o1", 21), ("a2", 10), ("b2", 10), ("a3", 10)):
+        tap.tell(session.off(found.get(label), want, TOLERANCE), "the session has %s" % label)
+    error = [thing["error"] for thing in objects if "error" in thing]
+    wrong = [] if [one["kind"] for one in error] == ["trim-unreachable"] else [str(error)]
+    wrong += [] if error and "O2 of mix is 100 mol%" in error[0]["hint"] else [str(error)]
+    tap.tell(wrong, "how near it came is said")
+
+
+def main():
+    tap = session.Tap()
+    rng = random.Random(SEED)
+    dilution(tap, rng)
+    wobbe(tap, rng)
+    corners(tap, rng)
+    several_values(tap)
+    session_follows(tap)
+    return tap.finish()
+
+
+sys.exit(main())
