@@ -56,7 +56,8 @@ struct conflict {
 enum figure_class { FIGURE_REDUNDANT, FIGURE_NEEDED, FIGURE_UNOBSERVABLE };
 struct adjustment {
   size_t fact, component;        /* component: of a composition, else `components` */
-  double stated, stated_u, moved_to, moved_to_u;
+  double stated, stated_u;
+  double moved_to, moved_to_u;   /* what it should have read; of a composition not closed again */
   double z;                      /* adjustment over its standard deviation; NAN: not redundant */
   double implied;                /* what the rest says it should read; NAN: not redundant */
   double detectable;             /* least error found with 80 % probability; NAN: none is */
@@ -65,8 +66,15 @@ struct adjustment {
 };
 /* A leak or a mistake in a balance, as an explanation beside a meter's fault.  */
 struct leak { size_t boundary, component; double size, drop; };
-/* One step of leaving out the figures that stand out most.  */
-struct elimination { size_t adjustment; double chi2, z, implied; size_t freedom; };
+/* One step of leaving out the figures that stand out most: what was left out, on what grounds (chi2
+   and its freedom with it), with which others it could be exchanged, and what comes out without
+   it: what it should read, and the flows by column.  */
+struct elimination {
+  size_t adjustment; double chi2, z, implied; size_t freedom;
+  size_t tie_count; const size_t *tie;           /* adjustments, itself among them; 0: no tie */
+  double chi2_left; size_t freedom_left;
+  const double *value;
+};
 
 struct solution {
   enum balance_status status;
@@ -102,11 +110,17 @@ struct solution {
   bool passed;
   size_t leak_count; const struct leak *leaks;
   size_t elimination_count; const struct elimination *eliminations;
+  size_t held_count; const size_t *held;                 /* columns that would come out below zero
+                                    and are held there; p is then approximate */
+  const bool *by_digits;         /* by fact: stated without uncertainty, counted with its digits;
+                                    null: none is */
   const struct covariance *covariance;                   /* null: nothing is uncertain */
 };
 
 /* Everything at once; the work it needs is freed, what it answers lives in the arena.
-   Measured facts (u not NAN) are reconciled where they are redundant and propagated where not;
+   Measured facts (u above 0) are reconciled where they are redundant and propagated where not.
+   Facts without uncertainty are exact beside them; where they then clash, or the global test fails,
+   those with a rounding that anything bears on count with u = rounding / sqrt (3) instead.
    `confidence` is that of the tests (0.95).  INTERRUPTED may be null.  Faults: interrupted,
    not-converged.                                                                                */
 struct solve_options { double confidence; bool (*interrupted) (void); };
@@ -114,7 +128,9 @@ const struct solution *network_solve (struct arena *, const struct network *,
                                       const struct solve_options *, struct fault *) MUST_CHECK;
 
 /* The standard uncertainty of LEFT (RIGHT null) or of LEFT / RIGHT at the solution, by the full
-   covariance of the measured facts; 0 if nothing uncertain reaches it, NAN if it is not fixed.  */
+   covariance of the measured facts; 0 if nothing uncertain reaches it, NAN if it is not fixed.
+   What is uncertain by more than SOLUTION_VAGUE of itself is as good as open.  */
+#define SOLUTION_VAGUE 0.3
 double solution_uncertainty (const struct solution *, const struct network *,
                              const struct form *left, const struct form *right);
 

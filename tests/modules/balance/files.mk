@@ -4,6 +4,13 @@
 #   %C%_t_NAME_SOURCES = %D%/t_NAME.c
 #   %C%_t_NAME_LDADD = $(with_balance)
 
+suites += %D%/t_gross
+%C%_t_gross_SOURCES = \
+  %D%/metered.c \
+  %D%/metered.h \
+  %D%/t_gross.c
+%C%_t_gross_LDADD = $(with_balance)
+
 suites += %D%/t_network
 %C%_t_network_SOURCES = %D%/t_network.c
 %C%_t_network_LDADD = $(with_balance)
@@ -14,6 +21,13 @@ suites += %D%/t_rank
   %D%/plant.h \
   %D%/t_rank.c
 %C%_t_rank_LDADD = $(with_balance)
+
+suites += %D%/t_reconcile
+%C%_t_reconcile_SOURCES = \
+  %D%/metered.c \
+  %D%/metered.h \
+  %D%/t_reconcile.c
+%C%_t_reconcile_LDADD = $(with_balance)
 
 suites += %D%/t_system
 %C%_t_system_SOURCES = \

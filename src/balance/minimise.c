@@ -1,0 +1,324 @@
+#include "config.h"
+#include "balance/minimise.h"
+
+#include <math.h>
+#include <string.h>
+#include "balance/solution.h"
+#include "support/arena.h"
+#include "support/fault.h"
+
+/* Enough for slow linear convergence (a large residual of a bent figure); most need 2 to 6.  */
+enum { STEPS = 200, HALVINGS = 40 };
+
+/* Where a step ends: the weighted figures move by less than CLOSE of their uncertainty and the
+   exact rows are met to MET of their terms.  NOISE: as little may be rounding, if steps no longer
+   shrink.  */
+static const double CLOSE = 1e-10, MET = 1e-12, NOISE = 1e-6;
+/* Rows that miss by more than this share of their terms contradict each other.  */
+static const double AGREED = 1e-9;
+/* How near a step may come to where a total or a closure is zero; Armijo's share.  */
+static const double NEAREST = 0.9, DESCENT = 1e-4;
+/* What a flow starts with at least, in usual flows.  */
+static const double LEAST_START = 1e-3;
+
+struct search {
+  struct arena *arena;           /* work: forgotten after each step */
+  const struct measured *measured;
+  double *v, *trial;             /* by place */
+  double *d;                     /* by unknown */
+  double penalty;                /* of what exact rows are short of, each by its own size */
+};
+
+/* ---- Measures of a point ---- */
+
+static double
+squares (const double e[], size_t n)
+{
+  double sum = 0;
+  for (size_t i = 0; i < n; i++) {
+    sum += e[i] * e[i];
+  }
+  return sum;
+}
+
+/* What the exact rows are short of, by their sizes.  */
+static double
+shortfall (const struct tangent *t)
+{
+  double sum = 0;
+  for (size_t i = 0; i < t->equations.exact.count; i++) {
+    sum += fabs (t->c[i]) / t->size[i];
+  }
+  return sum;
+}
+
+/* The largest that any exact row is short of, by its terms.  */
+static double
+worst_row (const struct tangent *t)
+{
+  double worst = 0;
+  for (size_t i = 0; i < t->equations.exact.count; i++) {
+    if (fabs (t->c[i]) > 0) {
+      worst = fmax (worst, fabs (t->c[i]) / fmax (t->terms[i], t->size[i]));
+    }
+  }
+  return worst;
+}
+
+static double
+merit (const struct tangent *t, double penalty)
+{
+  return squares (t->e, t->equations.measured.count) + penalty * shortfall (t);
+}
+
+/* ---- The start ---- */
+
+/* Raises what would make a total zero or less.  */
+static void
+raise_form (const struct measured *measured, const struct form *form, double v[])
+{
+  double least = LEAST_START * measured->flow;
+  if (form->count == 0 || form_value (form, v) >= least) {
+    return;
+  }
+  for (size_t i = 0; i < form->count; i++) {
+    size_t j = form->terms[i].column;
+    if (measured->unknown[j] != NOWHERE) {
+      v[j] = fmax (v[j], least);
+    }
+  }
+}
+
+static void
+raise_stream (const struct measured *measured, size_t stream, double v[])
+{
+  size_t parts = measured->network->components;
+  for (size_t j = stream * parts; j < (stream + 1) * parts; j++) {
+    if (measured->unknown[j] != NOWHERE && v[j] < LEAST_START * measured->flow) {
+      v[j] = LEAST_START * measured->flow;
+    }
+  }
+}
+
+static void
+raise_all (const struct measured *measured, double v[])
+{
+  const struct system *system = measured->system;
+  for (size_t i = 0; i < measured->figures; i++) {
+    raise_form (measured, &measured->figure[i].right, v);
+  }
+  for (size_t i = 0; i < system->bends; i++) {
+    raise_stream (measured, system->bend[i].inlet, v);
+    raise_stream (measured, system->bend[i].outlet, v);
+  }
+}
+
+static void
+add_step (const struct measured *measured, const double from[], double share, const double d[],
+          double to[])
+{
+  memcpy (to, from, measured->places * sizeof *to);
+  for (size_t k = 0; k < measured->unknowns; k++) {
+    to[measured->place[k]] += share * d[k];
+  }
+}
+
+/* Equal flows everywhere, then twice the linear problem without bends and closures, ratios taken
+   as rows by the flows there are.  */
+static void
+start (struct search *s)
+{
+  const struct measured *measured = s->measured;
+  size_t columns = measured->system->columns;
+  for (size_t i = 0; i < measured->places; i++) {
+    bool there = measured->unknown[i] != NOWHERE;
+    double flow = measured->flow / (double) measured->network->components;
+    s->v[i] = there ? (i < columns ? flow : 1) : 0;
+  }
+  for (int pass = 0; pass < 2; pass++) {
+    struct tangent t = tangent_make (s->arena, measured, s->v, true);
+    const struct factor *factor = factor_make (s->arena, &t.equations);
+    factor_solve (factor, s->arena, t.c, t.e, s->d);
+    add_step (measured, s->v, 1, s->d, s->v);
+    raise_all (measured, s->v);
+    arena_reset (s->arena);
+  }
+}
+
+/* ---- A step ---- */
+
+/* Shortens SHARE so that FORM keeps a tenth of what it has.  */
+static double
+keep_form (const struct search *s, const struct form *form, double share)
+{
+  double now = form_value (form, s->v), then = form_value (form, s->trial);
+  bool leaves = form->count > 0 && now > 0 && now + share * (then - now) < (1 - NEAREST) * now;
+  return leaves ? NEAREST * now / (now - then) : share;
+}
+
+static double
+keep_stream (const struct search *s, size_t stream, double share)
+{
+  double now = system_total (s->measured->system, s->v, stream);
+  double then = system_total (s->measured->system, s->trial, stream);
+  bool leaves = now > 0 && now + share * (then - now) < (1 - NEAREST) * now;
+  return leaves ? NEAREST * now / (now - then) : share;
+}
+
+/* How much of the step keeps every denominator above zero.  */
+static double
+longest_share (struct search *s)
+{
+  const struct measured *measured = s->measured;
+  const struct system *system = measured->system;
+  double share = 1;
+  add_step (measured, s->v, 1, s->d, s->trial);
+  for (size_t i = 0; i < measured->figures; i++) {
+    const struct figure *figure = &measured->figure[i];
+    share = keep_form (s, &figure->right, share);
+    if (figure->closure != NOWHERE) {
+      double now = s->v[figure->closure], then = s->trial[figure->closure];
+      bool leaves = now + share * (then - now) < (1 - NEAREST) * now;
+      share = leaves ? NEAREST * now / (now - then) : share;
+    }
+  }
+  for (size_t i = 0; i < system->bends; i++) {
+    share = keep_stream (s, system->bend[i].inlet, share);
+    share = keep_stream (s, system->bend[i].outlet, share);
+  }
+  return share;
+}
+
+/* What the weighted figures change by along the whole step.  */
+static double *
+moved_figures (struct search *s, const struct tangent *t)
+{
+  double *moved = ARENA_ARRAY (s->arena, t->equations.measured.count + 1, double);
+  sparse_times (&t->equations.measured, s->d, moved);
+  return moved;
+}
+
+/* What of the shortfall the whole step takes away, were all linear: nothing, where exact rows
+   contradict each other.  */
+static double
+gained (struct search *s, const struct tangent *t)
+{
+  const struct sparse *C = &t->equations.exact;
+  double *met = ARENA_ARRAY (s->arena, C->count + 1, double), gain = 0;
+  sparse_times (C, s->d, met);
+  for (size_t i = 0; i < C->count; i++) {
+    gain += (fabs (t->c[i]) - fabs (t->c[i] - met[i])) / t->size[i];
+  }
+  return fmax (gain, 0);
+}
+
+/* The slope of the merit along the step.  The penalty grows until the step goes downhill: Nocedal
+   and Wright, Numerical Optimization (2006), equation 18.36, with half for rho.  */
+static double
+slope (struct search *s, const struct tangent *t, const double moved[], double gain)
+{
+  double by = 0, square = squares (moved, t->equations.measured.count);
+  for (size_t i = 0; i < t->equations.measured.count; i++) {
+    by -= 2 * t->e[i] * moved[i];
+  }
+  if (gain > 0) {
+    s->penalty = fmax (s->penalty, (by + square) / (0.5 * gain));
+  }
+  return by - s->penalty * gain;
+}
+
+/* Takes as much of the step as brings the merit down; false if none does.  */
+static bool
+take_step (struct search *s, const struct tangent *t, double downhill)
+{
+  double share = longest_share (s), before = merit (t, s->penalty);
+  for (int i = 0; i < HALVINGS; i++, share /= 2) {
+    add_step (s->measured, s->v, share, s->d, s->trial);
+    struct tangent there = tangent_make (s->arena, s->measured, s->trial, false);
+    double after = merit (&there, s->penalty);
+    if (after <= before + DESCENT * share * downhill + 1e-12 * before + 1e-18) {
+      memcpy (s->v, s->trial, s->measured->places * sizeof *s->v);
+      return true;
+    }
+  }
+  return false;
+}
+
+static double
+largest (const double x[], size_t n)
+{
+  double most = 0;
+  for (size_t i = 0; i < n; i++) {
+    most = fmax (most, fabs (x[i]));
+  }
+  return most;
+}
+
+/* Steps until one hardly moves anything.  */
+static bool
+iterate (struct search *s, const struct solve_options *options, struct fault *fault)
+{
+  double last = HUGE_VAL;
+  for (int step = 0; step < STEPS; step++) {
+    arena_reset (s->arena);
+    if (options->interrupted && options->interrupted ()) {
+      return fault_set (fault, MESSAGE_INTERRUPTED, NULL, NULL);
+    }
+    struct tangent t = tangent_make (s->arena, s->measured, s->v, false);
+    const struct factor *factor = factor_make (s->arena, &t.equations);
+    factor_solve (factor, s->arena, t.c, t.e, s->d);
+    double *moved = moved_figures (s, &t);
+    double move = largest (moved, t.equations.measured.count), gain = gained (s, &t);
+    bool met = worst_row (&t) < MET || gain < 0.5 * shortfall (&t);
+    if (met && (move < CLOSE || (step > 2 && move < NOISE && move >= last / 2))) {
+      add_step (s->measured, s->v, 1, s->d, s->v);
+      return true;
+    }
+    if (!take_step (s, &t, slope (s, &t, moved, gain))) {
+      break;
+    }
+    last = move;
+  }
+  return fault_set (fault, MESSAGE_NOT_CONVERGED, "the reconciliation", NULL);
+}
+
+static void
+finish (struct arena *arena, const struct measured *measured, const double v[], struct fit *fit)
+{
+  double *kept = ARENA_ARRAY (arena, measured->places, double);
+  memcpy (kept, v, measured->places * sizeof *kept);
+  fit->v = kept;
+  fit->tangent = tangent_make (arena, measured, kept, false);
+  fit->factor = factor_make (arena, &fit->tangent.equations);
+  fit->rows = fit->tangent.equations.measured.count;
+  fit->chi2 = squares (fit->tangent.e, fit->rows);
+  fit->freedom = fit->rows - factor_rank (fit->factor);
+  fit->agreed = worst_row (&fit->tangent) <= AGREED;
+  fit->mismatch = 0;
+  for (size_t i = 0; i < fit->tangent.equations.exact.count; i++) {
+    double c = fabs (fit->tangent.c[i]) / (fit->tangent.size[i]);
+    fit->mismatch = fmax (fit->mismatch, c);
+  }
+}
+
+bool
+measured_minimise (struct arena *arena, const struct measured *measured,
+                   const struct solve_options *options, const double from[], struct fit *fit,
+                   struct fault *fault)
+{
+  struct search s = { .arena = arena_create (), .measured = measured };
+  s.v = ARENA_ARRAY (arena, measured->places, double);
+  s.trial = ARENA_ARRAY (arena, measured->places, double);
+  s.d = ARENA_ARRAY (arena, measured->unknowns, double);
+  if (from) {
+    memcpy (s.v, from, measured->places * sizeof *s.v);
+  } else {
+    start (&s);
+  }
+  bool done = iterate (&s, options, fault);
+  if (done) {
+    finish (arena, measured, s.v, fit);
+  }
+  arena_destroy (s.arena);
+  return done;
+}

@@ -1,0 +1,330 @@
+#include "config.h"
+#include "balance/reconcile.h"
+
+#include <math.h>
+#include <string.h>
+#include "balance/gross.h"
+#include "balance/minimise.h"
+#include "balance/solution.h"
+#include "balance/system.h"
+#include "balance/uncertainty.h"
+#include "support/arena.h"
+#include "support/fault.h"
+
+/* A flow below zero by more than this share of the largest is no rounding.  */
+static const double BELOW = 1e-9;
+/* Rounds of holding flows at zero and letting them go again.  */
+enum { ROUNDS = 50 };
+
+/* One way to read the facts.  */
+struct attempt {
+  struct arena *arena, *scratch;
+  const struct network *network;
+  const struct solve_options *options;
+  enum standing *standing;
+  struct measured *measured;
+  struct fit fit;
+};
+
+/* ---- Flows not below zero ---- */
+
+static double
+largest_flow (const struct measured *measured, const double v[])
+{
+  double most = 0;
+  for (size_t j = 0; j < measured->network->streams * measured->network->components; j++) {
+    most = fmax (most, fabs (v[j]));
+  }
+  return most;
+}
+
+/* Holds at zero what came out below; was there any?  A flow that is open is left alone.  */
+static bool
+hold_negative (struct attempt *a)
+{
+  const struct measured *measured = a->measured;
+  size_t flows = measured->network->streams * measured->network->components;
+  double least = -BELOW * largest_flow (measured, a->fit.v);
+  bool *open = fit_open (a->scratch, measured, &a->fit), any = false;
+  for (size_t j = 0; j < flows; j++) {
+    if (a->fit.v[j] < least && !open[j] && !measured->held[j]) {
+      a->measured->held[j] = any = true;
+    }
+  }
+  arena_reset (a->scratch);
+  return any;
+}
+
+/* Would chi2 fall if the flow held by exact row ROW rose above zero?  */
+static bool
+wants_up (struct attempt *a, size_t row)
+{
+  const struct tangent *t = &a->fit.tangent;
+  size_t m = t->equations.measured.count;
+  double *c = ARENA_ARRAY (a->scratch, t->equations.exact.count + 1, double);
+  double *zero = ARENA_ARRAY (a->scratch, m + 1, double);
+  double *moved = ARENA_ARRAY (a->scratch, m + 1, double), along = 0, size = 0;
+  double *d = gradient_make (a->scratch, a->measured);
+  c[row] = 1;
+  factor_solve (a->fit.factor, a->scratch, c, zero, d);
+  sparse_times (&t->equations.measured, d, moved);
+  for (size_t i = 0; i < m; i++) {
+    along += t->e[i] * moved[i];
+    size += moved[i] * moved[i];
+  }
+  arena_reset (a->scratch);
+  return along > BELOW * a->measured->flow * size;
+}
+
+/* Lets go the first held flow that wants to rise: Lawson and Hanson, Solving Least Squares Problems
+   (1974), chapter 23.  */
+static bool
+release (struct attempt *a)
+{
+  size_t row = a->fit.tangent.held;
+  for (size_t j = 0; j < a->measured->system->columns; j++) {
+    if (a->measured->held[j] && a->measured->unknown[j] != NOWHERE && wants_up (a, row++)) {
+      a->measured->held[j] = false;
+      return true;
+    }
+  }
+  return false;
+}
+
+static bool
+minimise (struct attempt *a, const double from[], struct fault *fault)
+{
+  return measured_minimise (a->arena, a->measured, a->options, from, &a->fit, fault);
+}
+
+/* The least sum of squares with no flow below zero.  */
+static bool
+minimise_bounded (struct attempt *a, struct fault *fault)
+{
+  a->measured = measured_make (a->arena, a->network, a->standing);
+  if (!minimise (a, NULL, fault)) {
+    return false;
+  }
+  for (int round = 0; round < ROUNDS && a->fit.agreed; round++) {
+    if (!hold_negative (a) && !release (a)) {
+      return true;
+    }
+    if (!minimise (a, a->fit.v, fault)) {
+      return false;
+    }
+  }
+  return !a->fit.agreed || fault_set (fault, MESSAGE_NOT_CONVERGED, "the reconciliation", NULL);
+}
+
+/* ---- Figures without uncertainty ---- */
+
+static bool
+has_digits (const struct network *network, const struct fact *fact)
+{
+  const double *rounding = fact->fractions_rounding;
+  for (size_t c = 0; fact->kind == FACT_COMPOSITION && rounding && c < network->components; c++) {
+    if (rounding[c] > 0) {
+      return true;
+    }
+  }
+  return fact->kind != FACT_COMPOSITION && fact->rounding > 0;
+}
+
+static void
+stand_as_stated (struct attempt *a)
+{
+  for (size_t f = 0; f < a->network->facts; f++) {
+    bool measured = fact_is_measured (a->network, &a->network->fact[f]);
+    a->standing[f] = measured ? STANDING_MEASURED : STANDING_EXACT;
+  }
+}
+
+/* Exact figures count with their digits; is there any?  */
+static bool
+stand_by_digits (struct attempt *a)
+{
+  bool any = false;
+  for (size_t f = 0; f < a->network->facts; f++) {
+    if (a->standing[f] == STANDING_EXACT && has_digits (a->network, &a->network->fact[f])) {
+      a->standing[f] = STANDING_DIGITS;
+      any = true;
+    }
+  }
+  return any;
+}
+
+/* Those that nothing else bears on are exact again; is there any?  Their adjustments are zero, so
+   that nothing else changes but what follows from them.  */
+static bool
+stand_back (struct attempt *a)
+{
+  const struct measured *measured = a->measured;
+  bool *borne = ARENA_ARRAY (a->arena, a->network->facts + 1, bool), any = false;
+  bool *redundant = redundant_figures (a->arena, measured, &a->fit);
+  for (size_t i = 0; i < measured->figures; i++) {
+    size_t f = measured->figure[i].fact;
+    borne[f] = borne[f] || redundant[i];
+  }
+  for (size_t f = 0; f < a->network->facts; f++) {
+    if (a->standing[f] == STANDING_DIGITS && !borne[f]) {
+      a->standing[f] = STANDING_EXACT;
+      any = true;
+    }
+  }
+  return any;
+}
+
+static bool
+fit_is_good (const struct attempt *a)
+{
+  return a->fit.agreed && chi2_passes (a->fit.chi2, a->fit.freedom, a->options->confidence);
+}
+
+/* Figures without uncertainty are exact, as stated.  If they cannot all hold beside the measured
+   ones, or these fail the test for it, what is wrong may be a last digit: exact and measured
+   figures are one system then.  */
+static bool
+find_fit (struct attempt *a, struct fault *fault)
+{
+  struct fault own;
+  fault_init (&own, fault->arena);
+  stand_as_stated (a);
+  bool done = minimise_bounded (a, &own);
+  bool good = done && fit_is_good (a);
+  if (good || own.kind == MESSAGE_INTERRUPTED || !stand_by_digits (a)) {
+    if (!done) {
+      *fault = own;
+    }
+  } else {
+    done = minimise_bounded (a, fault) && (!stand_back (a) || minimise_bounded (a, fault));
+  }
+  if (done && !a->fit.agreed) {
+    return fault_set (fault, MESSAGE_NOT_CONVERGED, "the reconciliation", NULL);
+  }
+  return done;
+}
+
+/* ---- The answer ---- */
+
+static bool *
+fixed_columns (struct arena *arena, const struct measured *measured, const bool open[])
+{
+  bool *fixed = ARENA_ARRAY (arena, measured->system->columns, bool);
+  for (size_t j = 0; j < measured->system->columns; j++) {
+    fixed[j] = !open[j];
+  }
+  return fixed;
+}
+
+/* What is fixed of streams and their fractions.  */
+static void
+fill_streams (struct arena *arena, const struct attempt *a, struct solution *solution)
+{
+  const struct network *network = a->network;
+  size_t parts = network->components;
+  bool *total = ARENA_ARRAY (arena, network->streams + 1, bool);
+  bool *fixed = ARENA_ARRAY (arena, network->streams * parts + 1, bool);
+  double *fraction = ARENA_ARRAY (arena, network->streams * parts + 1, double);
+  fit_open_streams (a->scratch, a->measured, &a->fit, total, fixed);
+  arena_reset (a->scratch);
+  for (size_t s = 0; s < network->streams; s++) {
+    double flow = system_total (a->measured->system, a->fit.v, s);
+    total[s] = !total[s];
+    for (size_t j = s * parts; j < (s + 1) * parts; j++) {
+      fixed[j] = !fixed[j] && fabs (flow) > BELOW * a->measured->flow;
+      fraction[j] = fixed[j] ? a->fit.v[j] / flow : (double) NAN;
+    }
+  }
+  solution->fixed_total = total;
+  solution->fixed_fraction = fixed;
+  solution->fraction = fraction;
+}
+
+/* Columns for which WHICH holds: below zero, or held there.  */
+static const size_t *
+columns_where (struct arena *arena, const struct attempt *a, bool held, size_t *count)
+{
+  const struct measured *measured = a->measured;
+  size_t *out = ARENA_ARRAY (arena, measured->system->columns + 1, size_t);
+  size_t flows = measured->network->streams * measured->network->components;
+  double least = -BELOW * largest_flow (measured, a->fit.v);
+  *count = 0;
+  for (size_t j = 0; j < flows; j++) {
+    if (held ? measured->held[j] : a->fit.v[j] < least) {
+      out[(*count)++] = j;
+    }
+  }
+  return out;
+}
+
+static void
+fill_values (struct arena *arena, const struct attempt *a, struct solution *solution)
+{
+  const struct measured *measured = a->measured;
+  size_t columns = measured->system->columns;
+  double *value = ARENA_ARRAY (arena, columns, double);
+  memcpy (value, a->fit.v, columns * sizeof *value);
+  solution->value = value;
+  bool *open = fit_open (a->scratch, measured, &a->fit);
+  solution->fixed = fixed_columns (arena, measured, open);
+  arena_reset (a->scratch);
+  fill_streams (arena, a, solution);
+  solution->mismatch = a->fit.mismatch / measured->flow;
+  solution->negative = columns_where (arena, a, false, &solution->negative_count);
+  solution->status = BALANCE_RECONCILED;
+  solution->conflict = NULL;
+}
+
+static void
+fill_standing (struct arena *arena, const struct attempt *a, struct solution *solution)
+{
+  bool *by_digits = ARENA_ARRAY (arena, a->network->facts + 1, bool);
+  for (size_t f = 0; f < a->network->facts; f++) {
+    by_digits[f] = a->standing[f] == STANDING_DIGITS;
+    if (by_digits[f]) {
+      solution->by_digits = by_digits;
+    }
+  }
+  solution->held = columns_where (arena, a, true, &solution->held_count);
+}
+
+static bool
+any_measured (const struct network *network)
+{
+  for (size_t f = 0; f < network->facts; f++) {
+    if (fact_is_measured (network, &network->fact[f])) {
+      return true;
+    }
+  }
+  return false;
+}
+
+bool
+system_reconcile (struct arena *arena, const struct system *system,
+                  const struct solve_options *options, struct solution *solution,
+                  struct fault *fault)
+{
+  const struct network *network = system->network;
+  if (!any_measured (network)) {
+    return true;
+  }
+  struct attempt a = { .arena = arena_create (), .scratch = arena_create (), .network = network,
+                       .options = options };
+  struct solution made = *solution;
+  a.standing = ARENA_ARRAY (a.arena, network->facts, enum standing);
+  bool done = find_fit (&a, fault);
+  if (done) {
+    fill_standing (arena, &a, &made);
+    made.covariance = covariance_keep (arena, a.measured, &a.fit);
+  }
+  if (done && a.fit.freedom > 0) {
+    fill_values (arena, &a, &made);
+    done = gross_test (arena, a.measured, &a.fit, options, &made, fault);
+  }
+  if (done) {
+    *solution = made;
+  }
+  arena_destroy (a.scratch);
+  arena_destroy (a.arena);
+  return done;
+}

@@ -1,0 +1,132 @@
+/* Everything linearised at a point; see measured.h.  */
+#include "config.h"
+#include "balance/measured.h"
+
+#include <math.h>
+#include "support/arena.h"
+
+/* Adds the rows of the system to C, and what they are short of.  */
+static void
+add_rows (const struct measured *measured, const struct rows *rows, const double v[],
+          bool residual, struct tangent *t)
+{
+  struct sparse *C = &t->equations.exact;
+  for (size_t i = 0; i < rows->count; i++) {
+    double terms = fabs (rows->right[i]);
+    sparse_begin (C);
+    for (size_t k = rows->start[i]; k < rows->start[i + 1]; k++) {
+      size_t j = measured->unknown[rows->column[k]];
+      if (j != NOWHERE) {
+        sparse_add (C, j, rows->coefficient[k]);
+        terms += fabs (rows->coefficient[k] * v[rows->column[k]]);
+      }
+    }
+    t->c[C->count - 1] = residual ? -rows_residual (rows, i, v) : rows->right[i];
+    t->terms[C->count - 1] = terms;
+  }
+}
+
+static void
+add_held (const struct measured *measured, const double v[], struct tangent *t)
+{
+  struct sparse *C = &t->equations.exact;
+  for (size_t j = 0; j < measured->system->columns; j++) {
+    if (measured->held[j] && measured->unknown[j] != NOWHERE) {
+      sparse_begin (C);
+      sparse_add (C, measured->unknown[j], 1);
+      t->c[C->count - 1] = -v[j];
+      t->terms[C->count - 1] = measured->flow;
+    }
+  }
+}
+
+/* Adds FACTOR times FORM to the row begun last.  */
+static void
+add_form (const struct measured *measured, const struct form *form, double factor,
+          struct sparse *G)
+{
+  for (size_t i = 0; i < form->count; i++) {
+    size_t k = measured->unknown[form->terms[i].column];
+    if (k != NOWHERE) {
+      sparse_add (G, k, factor * form->terms[i].coefficient);
+    }
+  }
+}
+
+/* The row of a figure and what it is short of, both over u; at the start as left - y right.  */
+static double
+add_figure_row (const struct measured *measured, const struct figure *figure, const double v[],
+                bool start, struct sparse *G)
+{
+  double left = form_value (&figure->left, v);
+  double right = figure->right.count > 0 ? form_value (&figure->right, v) : 1;
+  double closure = figure->closure == NOWHERE ? 1 : v[figure->closure];
+  double weight = 1 / (figure->u * right), ratio = left / right;
+  sparse_begin (G);
+  add_form (measured, &figure->left, weight * closure, G);
+  add_form (measured, &figure->right, -weight * (start ? figure->y : closure * ratio), G);
+  if (figure->closure != NOWHERE && !start) {
+    sparse_add (G, measured->unknown[figure->closure], ratio / figure->u);
+  }
+  if (start && figure->right.count > 0) {
+    return -weight * (left - figure->y * right);
+  }
+  return (figure->y - closure * ratio) / figure->u;
+}
+
+static size_t
+measured_terms (const struct measured *measured)
+{
+  size_t terms = 0;
+  for (size_t i = 0; i < measured->figures; i++) {
+    terms += measured->figure[i].left.count + measured->figure[i].right.count + 1;
+  }
+  return terms;
+}
+
+static void
+add_measured (struct arena *arena, const struct measured *measured, const double v[], bool start,
+              struct tangent *t)
+{
+  struct sparse *G = &t->equations.measured;
+  size_t *of = ARENA_ARRAY (arena, measured->figures + 1, size_t);
+  *G = sparse_make (arena, measured->figures, measured_terms (measured));
+  t->e = ARENA_ARRAY (arena, measured->figures + 1, double);
+  for (size_t i = 0; i < measured->figures; i++) {
+    if (!measured->left_out[i] && !measured->figure[i].void_) {
+      of[G->count] = i;
+      double e = add_figure_row (measured, &measured->figure[i], v, start, G);
+      t->e[G->count - 1] = e;
+    }
+  }
+  t->figure = of;
+}
+
+struct tangent
+tangent_make (struct arena *arena, const struct measured *measured, const double v[], bool start)
+{
+  const struct system *system = measured->system;
+  struct tangent t = { .equations = { .unknowns = measured->unknowns,
+                                      .scale = measured->scale } };
+  struct rows bent = { .count = 0 };
+  if (!start && system->bends > 0) {
+    bent = system_bent (arena, system, v);
+  }
+  size_t most = system->rows.count + bent.count + system->columns;
+  size_t terms = system->rows.start[system->rows.count] + system->columns;
+  terms += bent.count > 0 ? bent.start[bent.count] : 0;
+  t.equations.exact = sparse_make (arena, most, terms);
+  t.c = ARENA_ARRAY (arena, most + 1, double);
+  t.terms = ARENA_ARRAY (arena, most + 1, double);
+  t.size = ARENA_ARRAY (arena, most + 1, double);
+  add_rows (measured, &system->rows, v, true, &t);
+  t.bends = t.equations.exact.count;
+  add_rows (measured, &bent, v, false, &t);
+  t.held = t.equations.exact.count;
+  add_held (measured, v, &t);
+  for (size_t i = 0; i < t.equations.exact.count; i++) {
+    t.size[i] = sparse_row_size (&t.equations.exact, i, measured->scale);
+  }
+  add_measured (arena, measured, v, start, &t);
+  return t;
+}
