@@ -12,6 +12,7 @@ tables = \
   %D%/iso6976_2016.tsv \
   %D%/iso6976_constants.tsv \
   %D%/messages.tsv \
+  %D%/readings.tsv \
   %D%/reference_names.tsv \
   %D%/references.tsv \
   %D%/sources.tsv \

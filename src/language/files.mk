@@ -1,9 +1,20 @@
 noinst_LIBRARIES += %D%/liblanguage.a
 
 %C%_liblanguage_a_SOURCES = \
+  %D%/check/candidates.c \
+  %D%/check/hold.c \
+  %D%/check/hold.h \
+  %D%/check/need.c \
+  %D%/check/readings.c \
+  %D%/check/readings.h \
+  %D%/check/search.c \
+  %D%/check/search.h \
+  %D%/check/trial.c \
+  %D%/check/trial.h \
   %D%/commands/card_gas.c \
   %D%/commands/card_stream.c \
   %D%/commands/card_table.c \
+  %D%/commands/check.c \
   %D%/commands/command.c \
   %D%/commands/commands.h \
   %D%/commands/define.c \

@@ -7,6 +7,7 @@
 #include "gas/air.h"
 #include "gas/reference.h"
 #include "gas/species.h"
+#include "language/check/readings.h"
 #include "language/commands/commands.h"
 #include "language/evaluate/wording.h"
 #include "property/calorific.h"
@@ -81,6 +82,7 @@ session_destroy (struct session *s)
     unit_table_destroy (s->vocabulary.units);
   }
   calorific_tables_destroy (s->calorific);
+  readings_destroy (s->readings);
   property_tables_destroy (s->properties);
   memory_release (s->last_subject);
   arena_destroy (s->arena);

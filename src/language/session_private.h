@@ -9,7 +9,7 @@
 #include "support/check.h"
 
 struct calorific_tables; struct composition; struct map; struct property_tables;
-struct reference_table; struct remark; struct result;
+struct readings; struct reference_table; struct remark; struct result;
 struct species;
 
 enum name_kind { NAME_GAS, NAME_STREAM, NAME_QUANTITY, NAME_REFERENCE };
@@ -57,6 +57,7 @@ struct session {
   const struct species *water, *oxygen;
   const struct composition *air;           /* as predefined */
   struct calorific_tables *calorific;      /* read when first asked for; or null */
+  struct readings *readings;               /* of a check; read when first asked for, or null */
   struct property_tables *properties;      /* each read when first asked for */
   struct arena *arena;                     /* what lasts: tables' extras, texts of settings */
   struct settings settings;
@@ -171,6 +172,8 @@ bool question_figures (struct evaluation *, const struct statement *, struct val
                        struct figures *) MUST_CHECK;
 /* The same question once more, under an evaluation the caller prepared.  */
 bool question_again (struct evaluation *, const struct statement *, struct figures *) MUST_CHECK;
+/* Puts all there is to say of a question into the evaluation's result.  */
+bool question_answer (struct evaluation *, const struct statement *) MUST_CHECK;
 /* Runs a question: figures, uncertainties, assumptions with their effects, notes.  */
 bool ask (struct session *, const struct statement *, struct result *, struct fault *) MUST_CHECK;
 #endif

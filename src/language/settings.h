@@ -16,7 +16,24 @@ enum below_detection { BELOW_ZERO, BELOW_HALF, BELOW_LIMIT };
 /* What a reference family stands for: conditions, and how they are written.  */
 struct family_setting { struct conditions at; const char *text; bool set; const char *source; };
 
+/* What is tried in place of what was typed while a check looks for another reading of it; all
+   zero (and null) but then.                                                                     */
+struct trial {
+  bool gauge_absolute, absolute_gauge;     /* a gauge figure read as absolute, and the reverse */
+  bool dry, wet;                           /* flows are counted so, whatever their words */
+  bool no_moisture;                        /* the moisture of states is left out */
+  bool vapour_atmospheric;                 /* the vapour fraction is that at 101.325 kPa */
+  bool other_heat;                         /* net for gross, and the reverse */
+  bool no_oxygen;                          /* no correction to a reference oxygen */
+  bool Z_out, Z_inverse;                   /* compressibility left out; multiplied for divided */
+  double ice_point;                        /* K of 0 degC */
+  const char *from, *to;                   /* a word of units read as another */
+  const struct node *counted_as;           /* of a component */
+  double T, p, humidity, Z;                /* of every state that says one: K, Pa, 0 to 1, 1 */
+};
+
 struct settings {
+  /* That of FAMILY_NONE is for volumes whose state nobody said; as shipped there is none.  */
   struct family_setting family[FAMILY_COUNT];
   double site_pressure;                    /* Pa */
   const char *site_pressure_text;          /* as it was set; null: as shipped */
@@ -37,6 +54,7 @@ struct settings {
   bool ignore_total;                       /* while a figure is moved by its uncertainty */
   bool bare_is_gauge;                      /* while the gauge reading of bare pressures is tried */
   double vapour_factor;                    /* 1, but while it is tried whether water matters */
+  struct trial trial;
   bool is_set[SETTING_COUNT];              /* changed by the user */
   const char *source[SETTING_COUNT];       /* the statement that set it, for `save` */
 };

@@ -10,6 +10,8 @@
    - a card: one row a cell; `what` is "ROW of TITLE", `label` the heading, `value` the number or
      the text; a text without a heading behind a cell is its unit; the lines under it are rows
      whose `label` is "line" and whose `basis` is the text;
+   - a check: the computed figure is a row like any; behind it one for each reading that fits, is
+     ruled out, or would have to be true instead: `label` says which, `basis` what it is;
    - help: `what` is the topic, `label` say, get or try, `value` the text;
    - a statement that only had something to note: one row without a value.                      */
 #include "config.h"
@@ -18,6 +20,7 @@
 #include <math.h>
 #include <string.h>
 
+#include "result/check_verdict.h"
 #include "result/result.h"
 #include "support/number.h"
 #include "support/text.h"
@@ -188,6 +191,43 @@ help_page_add (struct frame *frame, const struct help_page *page)
 }
 
 static void
+reading_add (struct frame *frame, const char *what, const char *label,
+             const struct check_reading *readings)
+{
+  for (const struct check_reading *r = readings; r != NULL; r = r->next) {
+    row_open (frame, what, label);
+    next_number (frame->out, r->value);
+    next_field (frame->out, r->unit);
+    text_add (frame->out, ",,");
+    next_field (frame->out, r->reading);
+    row_close (frame);
+  }
+}
+
+static void
+check_add (struct frame *frame, const struct check_verdict *v)
+{
+  for (const struct check_figure *f = v->figures; f != NULL; f = f->next) {
+    row_open (frame, f->name != NULL ? f->name : f->stated, f->holds ? "agrees" : "stands alone");
+    next_number (frame->out, f->computed);
+    next_field (frame->out, f->unit);
+    text_add (frame->out, ",,");
+    next_field (frame->out, f->stated);
+    row_close (frame);
+  }
+  reading_add (frame, v->stated, "fits", v->readings);
+  reading_add (frame, v->stated, "ruled out", v->ruled_out);
+  for (const struct check_need *n = v->needs; n != NULL; n = n->next) {
+    row_open (frame, v->stated, "instead");
+    next_number (frame->out, n->value);
+    next_field (frame->out, n->unit);
+    text_add (frame->out, ",,");
+    next_field (frame->out, n->what);
+    row_close (frame);
+  }
+}
+
+static void
 rows_add (struct frame *frame, const struct result *result)
 {
   for (const struct answer *a = result->answers; a != NULL; a = a->next)
@@ -198,6 +238,8 @@ rows_add (struct frame *frame, const struct result *result)
     for (const struct card_line *l = c->lines; l != NULL; l = l->next)
       words_add (frame, c->title, "line", NULL, l->text);
   }
+  if (result->check != NULL)
+    check_add (frame, result->check);
   if (result->help != NULL)
     help_page_add (frame, result->help);
   if (result->answers == NULL && result->cards == NULL && result->help == NULL)

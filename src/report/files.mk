@@ -8,6 +8,7 @@ noinst_LIBRARIES += %D%/libreport.a
   %D%/chart.h \
   %D%/chart_plan.c \
   %D%/chart_plan.h \
+  %D%/check.c \
   %D%/csv.c \
   %D%/error.c \
   %D%/figure.c \

@@ -10,6 +10,11 @@
    word that opens the line; what was taken ends with its bracket.
    A card: {"title","kind","columns":[heading],"rows":[{"name","values":[number, text or null]}],
      "lines":[text]}; "further_cards" holds those behind the first.
+   A check adds "readings":[{"reading","value","unit","deviation","cost"}], best first, and
+   "check":{"stated","outcome","value","difference","deviation","limit","limit_by","unit","tied",
+     "ruled_out":[as readings],"needed":[{"what","value","unit","least","greatest"}]}; a value that
+     nothing makes true is null.  Of a sheet it has "agreeing" and "figures":[{"name","stated",
+     "value","unit","deviation","agrees","as_written"}] in place of what one figure has.
    Help: {"title","entries":[{"say","get","try"}]}.
    A fault: {"statement","error":{"kind","message","file"?,"line","column","hint"}}; "hint" is a
    corrected line where there is one, else what was expected, else "".  A place not known is 0.
@@ -20,6 +25,7 @@
 #include <math.h>
 #include <string.h>
 
+#include "result/check_verdict.h"
 #include "result/result.h"
 #include "support/fault.h"
 #include "support/number.h"
@@ -233,6 +239,85 @@ help_page_add (struct text *out, const struct help_page *page)
   text_add (out, "]}");
 }
 
+static void
+readings_add (struct text *out, const char *key, const struct check_reading *readings)
+{
+  text_add (out, key);
+  for (const struct check_reading *r = readings; r != NULL; r = r->next) {
+    member (out, r != readings ? ",{\"reading\":" : "{\"reading\":", r->reading);
+    text_add (out, ",\"value\":");
+    number (out, r->value);
+    member (out, ",\"unit\":", r->unit);
+    text_add (out, ",\"deviation\":");
+    number (out, r->deviation);
+    text_add_format (out, ",\"cost\":%d}", r->cost);
+  }
+  text_add_char (out, ']');
+}
+
+static void
+needs_add (struct text *out, const struct check_need *needs)
+{
+  text_add (out, ",\"needed\":[");
+  for (const struct check_need *n = needs; n != NULL; n = n->next) {
+    member (out, n != needs ? ",{\"what\":" : "{\"what\":", n->what);
+    text_add (out, ",\"value\":");
+    number (out, n->value);
+    member (out, ",\"unit\":", n->unit);
+    text_add (out, ",\"least\":");
+    number (out, n->least);
+    text_add (out, ",\"greatest\":");
+    number (out, n->greatest);
+    text_add_char (out, '}');
+  }
+  text_add_char (out, ']');
+}
+
+static void
+figures_add (struct text *out, const struct check_verdict *v)
+{
+  text_add_format (out, ",\"agreeing\":%zu,\"figures\":[", v->agreeing);
+  for (const struct check_figure *f = v->figures; f != NULL; f = f->next) {
+    member (out, f != v->figures ? ",{\"name\":" : "{\"name\":", f->name);
+    member (out, ",\"stated\":", f->stated);
+    text_add (out, ",\"value\":");
+    number (out, f->computed);
+    member (out, ",\"unit\":", f->unit);
+    text_add (out, ",\"deviation\":");
+    number (out, f->deviation);
+    text_add_format (out, ",\"agrees\":%s,\"as_written\":%s}", f->holds ? "true" : "false",
+                     f->as_written ? "true" : "false");
+  }
+  text_add_char (out, ']');
+}
+
+static void
+check_add (struct text *out, const struct check_verdict *v)
+{
+  static const char *const outcomes[] = { "holds", "readings", "unexplained" };
+  readings_add (out, ",\"readings\":[", v->readings);
+  member (out, ",\"check\":{\"stated\":", v->stated);
+  member (out, ",\"outcome\":", outcomes[v->outcome]);
+  if (v->figures != NULL)
+    figures_add (out, v);
+  else {
+    text_add (out, ",\"value\":");
+    number (out, v->value);
+    text_add (out, ",\"difference\":");
+    number (out, v->difference);
+    text_add (out, ",\"deviation\":");
+    number (out, v->deviation);
+    text_add (out, ",\"limit\":");
+    number (out, v->limit);
+    member (out, ",\"limit_by\":", v->by_digits ? "digits" : "uncertainty");
+    member (out, ",\"unit\":", v->unit);
+  }
+  text_add_format (out, ",\"tied\":%zu", v->tied);
+  readings_add (out, ",\"ruled_out\":[", v->ruled_out);
+  needs_add (out, v->needs);
+  text_add_char (out, '}');
+}
+
 void
 report_json (struct text *out, const struct result *result)
 {
@@ -250,6 +335,8 @@ report_json (struct text *out, const struct result *result)
     cards_add (out, result->cards);
   if (result->help != NULL)
     help_page_add (out, result->help);
+  if (result->check != NULL)
+    check_add (out, result->check);
   remarks_add (out, ",\"taken\":", result->taken);
   remarks_add (out, ",\"notes\":", result->notes);
   remarks_add (out, ",\"cautions\":", result->cautions);

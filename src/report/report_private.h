@@ -77,6 +77,8 @@ void fault_words_clear (struct fault_words *);
 void report_text (struct text *, const struct report_style *, const struct result *);
 void report_json (struct text *, const struct result *);
 void report_csv (struct text *, const struct result *, bool first);
+/* The verdict of a check, with the computed figure.  */
+void report_check (struct text *, const struct report_style *, const struct result *);
 void report_card (struct text *, const struct report_style *, const struct card *);
 void report_help (struct text *, const struct report_style *, const struct help_page *);
 void report_fault_text (struct text *, const struct report_style *, const struct fault *,

@@ -279,7 +279,9 @@ report_text (struct text *out, const struct report_style *style, const struct re
     return;
   if (style->prompt)
     text_add_char (out, '\n');
-  if (result->answers != NULL)
+  if (result->check != NULL)
+    report_check (out, style, result);
+  else if (result->answers != NULL)
     answers_add (out, style, result);
   for (const struct card *c = result->cards; c != NULL; c = c->next)
     report_card (out, style, c);

@@ -2,5 +2,6 @@ noinst_LIBRARIES += %D%/libresult.a
 
 %C%_libresult_a_SOURCES = \
   %D%/chart.h \
+  %D%/check_verdict.h \
   %D%/result.c \
   %D%/result.h

@@ -2,6 +2,7 @@
 EXTRA_DIST += \
   %D%/bad \
   %D%/contract.gw \
+  %D%/quarrels.tsv \
   %D%/scenarios \
   %D%/session.py \
   %D%/session.sh \
@@ -12,9 +13,11 @@ TESTS += $(session_tests)
 session_tests = \
   %D%/air.sh \
   %D%/bad.sh \
+  %D%/claims.sh \
   %D%/contract.sh \
   %D%/energy.sh \
   %D%/figures.sh \
+  %D%/quarrels.sh \
   %D%/refused.sh \
   %D%/roundtrips.sh \
   %D%/scenarios.sh \

@@ -1,4 +1,5 @@
-"""Worked problems (scenarios/*.gw) give the figures of expected.tsv and say what said.tsv asks."""
+"""Worked problems (scenarios/*.gw) give the figures of expected.tsv and say what said.tsv asks:
+in basis, taken, notes or cautions of an answer, or among the readings of a check."""
 import re
 import sys
 
@@ -15,9 +16,15 @@ def figure(value):
 def says(row, answer, thing, text):
     """Machines and people both get what ROW asks of ANSWER; else what there is instead."""
     pattern, where = re.compile(row["pattern"]), row["where"]
-    here = [answer["basis"]] if where == "basis" else thing[where]
+    if where in ("readings", "ruled_out"):
+        found = thing["readings"] if where == "readings" else thing["check"]["ruled_out"]
+        here = [one["reading"] for one in found]
+    else:
+        here = [answer["basis"]] if where == "basis" else thing[where]
     if not any(pattern.search(one) for one in here):
         return ["nothing like '%s' in JSON:" % row["pattern"], *here]
+    if where in ("readings", "ruled_out"):
+        return [] if pattern.search(text) else ["nothing like '%s' in text" % row["pattern"]]
     # In text the columns are blanks apart, and remarks have their bracket in a column.
     start, gap = {"basis": (re.escape(answer.get("label", "")), ", "), "taken": (r"\?", " "),
                   "notes": ("~", " "), "cautions": ("!", " ")}[where]

@@ -63,6 +63,11 @@ command_run (struct session *session, const struct statement *s, struct result *
     return command_help (session, s, result, fault);
   case STATEMENT_UNDO:
     return command_undo (session, s, result, fault);
+  case STATEMENT_CHECK:
+    if (s->claim) {
+      return command_check (session, s, result, fault);
+    }
+    break;
   case STATEMENT_TRIM:
     return command_trim (session, s, result, fault);
   case STATEMENT_QUIT:
@@ -73,7 +78,6 @@ command_run (struct session *session, const struct statement *s, struct result *
   case STATEMENT_BALANCE:
   case STATEMENT_SOLVE:
   case STATEMENT_SHEET:
-  case STATEMENT_CHECK:
   case STATEMENT_NOTE:
   case STATEMENT_WORKINGS:
   case STATEMENT_MIX:

@@ -19,7 +19,7 @@ typedef bool command (struct session *, const struct statement *, struct result 
 bool command_run (struct session *, const struct statement *, struct result *, struct fault *)
   MUST_CHECK;
 
-command command_define, command_normalise, command_set, command_show, command_list,
+command command_check, command_define, command_normalise, command_set, command_show, command_list,
   command_forget, command_trim, command_save, command_open, command_help, command_undo;
 
 /* The cards of `show` (card_*.c).  */

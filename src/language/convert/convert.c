@@ -106,6 +106,18 @@ settle_unit (struct conversion *c, const struct value *v)
   return true;
 }
 
+/* While a check tries it: what the target would mean instead.  */
+static void
+try_other (struct conversion *c)
+{
+  const struct trial *trial = &c->ev->settings->trial;
+  c->unit = evaluation_unit (c->ev, c->unit);
+  c->words |= trial->dry ? WORD_DRY : 0;
+  c->words &= trial->wet ? ~ (unsigned) WORD_DRY : ~0u;
+  c->state.oxygen = trial->no_oxygen ? UNSTATED : c->state.oxygen;
+  c->counted_as = trial->counted_as && !c->counted_as ? trial->counted_as : c->counted_as;
+}
+
 static bool
 settle_target (struct conversion *c, const struct target *t)
 {
@@ -133,6 +145,7 @@ settle_target (struct conversion *c, const struct target *t)
   }
   c->words |= c->state.moisture == MOISTURE_DRY ? WORD_DRY : 0;
   c->words |= c->state.ideal ? WORD_IDEAL : c->state.real ? WORD_REAL : 0;
+  try_other (c);
   return true;
 }
 
@@ -316,6 +329,17 @@ no_volume_state (struct conversion *c)
   return false;
 }
 
+/* While a check tries conditions for a volume whose state nobody said.  */
+static bool
+open_volume (struct conversion *c, const struct composition *gas, struct counted_volume *volume)
+{
+  struct evaluation *ev = c->ev;
+  bool real = (c->words & WORD_REAL) != 0 || ev->settings->real_volumes;
+  volume->basis = arena_format (ev->arena, "%s, %s", ev->settings->family[FAMILY_NONE].text,
+                                gas && real ? "real volume" : "ideal-gas volume");
+  return family_molar_volume (ev, FAMILY_NONE, gas, real, &volume->Vm);
+}
+
 bool
 conversion_volume (struct conversion *c, const struct composition *gas,
                    const struct stream *fallback, struct counted_volume *volume)
@@ -337,6 +361,9 @@ conversion_volume (struct conversion *c, const struct composition *gas,
     return true;
   }
   bool own = !c->has_state || (isnan (c->state.T) && isnan (c->state.p));
+  if (own && !isnan (ev->settings->family[FAMILY_NONE].at.T)) {
+    return open_volume (c, gas, volume);
+  }
   struct volume_question q = {
     gas, isnan (c->state.T) ? fallback->T : c->state.T,
     isnan (c->state.p) ? fallback->p : c->state.p,

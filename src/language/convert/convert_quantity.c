@@ -34,7 +34,7 @@ convert_pressure (struct conversion *c)
   }
   switch (c->unit->sort) {
   case UNIT_GAUGE:
-    p -= site;
+    p -= ev->settings->trial.gauge_absolute ? 0 : site;
     break;
   case UNIT_VACUUM:
     p = site - p;
@@ -45,6 +45,8 @@ convert_pressure (struct conversion *c)
     }
     break;
   case UNIT_ABSOLUTE:
+    p -= ev->settings->trial.absolute_gauge ? site : 0;
+    break;
   case UNIT_POINT:
   case UNIT_DIFFERENCE:
   case UNIT_HUMIDITY:
@@ -106,6 +108,11 @@ ideal_moles_per (struct conversion *c, const struct measure *m, double T, double
   if (basis != FLOW_ACTUAL) {
     return conversion_mismatch (c, "of which gas? only volumes and moles of an ideal gas are "
                                 "told without one");
+  }
+  if ((isnan (T) || isnan (p)) && !isnan (ev->settings->family[FAMILY_NONE].at.T)) {
+    struct conditions at = ev->settings->family[FAMILY_NONE].at;
+    *per = at.p / (GAS_CONSTANT * at.T);
+    return true;
   }
   if (isnan (T) || isnan (p)) {
     fault_set_at (ev->fault, MESSAGE_STATE_MISSING, c->at,

@@ -224,26 +224,34 @@ asks_for_that (const struct node *node)
 }
 
 bool
+question_answer (struct evaluation *ev, const struct statement *s)
+{
+  struct value value;
+  struct figures figures = { NULL, 0, 0 };
+  struct result *result = ev->result;
+  if (!question_figures (ev, s, &value, &figures)
+      || !add_uncertainties (ev, s, &figures, add_answers (result, &figures))) {
+    return false;
+  }
+  for (size_t i = 0; i < ev->assumption_count; i++) {
+    tell_assumption (ev, s, &figures, &ev->assumptions[i]);
+  }
+  result_sort_taken (result);
+  caution_value (ev, s, &value);
+  for (size_t i = 0; i < ev->used_count; i++) {
+    definition_tell (ev->session, ev->used[i], false, result);
+  }
+  return true;
+}
+
+bool
 ask (struct session *session, const struct statement *s, struct result *result,
      struct fault *fault)
 {
   struct evaluation ev;
-  struct value value;
-  struct figures figures = { NULL, 0, 0 };
   evaluation_init (&ev, session, result, fault);
-  if (!question_figures (&ev, s, &value, &figures)) {
+  if (!question_answer (&ev, s)) {
     return false;
-  }
-  if (!add_uncertainties (&ev, s, &figures, add_answers (result, &figures))) {
-    return false;
-  }
-  for (size_t i = 0; i < ev.assumption_count; i++) {
-    tell_assumption (&ev, s, &figures, &ev.assumptions[i]);
-  }
-  result_sort_taken (result);
-  caution_value (&ev, s, &value);
-  for (size_t i = 0; i < ev.used_count; i++) {
-    definition_tell (session, ev.used[i], false, result);
   }
   if (!asks_for_that (s->value)) {
     keep_subject (session, node_text (ev.arena, s, s->value));

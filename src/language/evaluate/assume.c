@@ -77,3 +77,33 @@ evaluation_use (struct evaluation *ev, struct definition *definition)
                            sizeof *ev->used);
   ev->used[ev->used_count++] = definition;
 }
+
+/* Does a word of a unit begin or end between these two characters?  */
+static bool
+parts_words (char outside)
+{
+  return outside == '\0' || strchr ("*/^()", outside) != NULL;
+}
+
+/* The text of a unit with the word FROM of it replaced by TO; null: it has no such word.  */
+static const char *
+replaced_word (struct arena *arena, const char *text, const char *from, const char *to)
+{
+  size_t n = strlen (from);
+  for (const char *at = strstr (text, from); at; at = strstr (at + 1, from))
+    if (parts_words (at == text ? '\0' : at[-1]) && parts_words (at[n])) {
+      return arena_format (arena, "%.*s%s%s", (int) (at - text), text, to, at + n);
+    }
+  return NULL;
+}
+
+const struct unit *
+evaluation_unit (struct evaluation *ev, const struct unit *unit)
+{
+  const struct trial *trial = &ev->settings->trial;
+  const char *text = trial->from && unit
+                       ? replaced_word (ev->arena, unit->spelling, trial->from, trial->to) : NULL;
+  const struct unit *other = text ? unit_find (ev->session->vocabulary.units, text, strlen (text),
+                                               NULL) : NULL;
+  return other ? other : unit;
+}

@@ -10,6 +10,7 @@
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
+#include "units/constants.h"
 
 /* The number of `q m3/h`: q must stand for a bare number.  */
 static bool
@@ -42,6 +43,9 @@ static double
 above_barometer (struct evaluation *ev, const struct node *node, double si)
 {
   bool gauge = node->unit->sort == UNIT_GAUGE;
+  if (gauge && ev->settings->trial.gauge_absolute) {
+    return si;
+  }
   double site = evaluation_barometer (ev);
   double absolute = gauge ? site + si : site - si;
   evaluation_touch (ev, TOUCH_SITE);
@@ -64,20 +68,26 @@ quantity_node (struct evaluation *ev, const struct node *node, struct value *out
   if (!node->unit) {
     return true;
   }
-  out->unit = node->unit;
+  const struct unit *unit = evaluation_unit (ev, node->unit);
+  evaluation_touch (ev, TOUCH_TYPED);
+  out->unit = unit;
   out->words = node->words;
-  out->measure = measure_of_unit (node->unit);
-  out->si = unit_to_si (node->unit, number);
+  out->measure = measure_of_unit (unit);
+  out->si = unit_to_si (unit, number);
+  if (unit->sort == UNIT_POINT && ev->settings->trial.ice_point > 0
+      && fabs (unit->offset - ICE_POINT) < 1e-9) {
+    out->si += ev->settings->trial.ice_point - ICE_POINT;
+  }
   if (!isfinite (out->si)) {
     return fault_set_at (ev->fault, MESSAGE_NOT_FINITE, node->at, NULL, NULL);
   }
-  if (node->unit->sort == UNIT_GAUGE || node->unit->sort == UNIT_VACUUM) {
+  if (unit->sort == UNIT_GAUGE || unit->sort == UNIT_VACUUM) {
     out->si = above_barometer (ev, node, out->si);
     return out->si >= 0
            || fault_set_at (ev->fault, MESSAGE_RANGE, node->at,
                             "an absolute pressure below zero: less than a perfect vacuum", NULL);
   }
-  if (node->unit->sort == UNIT_POINT && out->si < 0) {
+  if (unit->sort == UNIT_POINT && out->si < 0) {
     return fault_set_at (ev->fault, MESSAGE_RANGE, node->at,
                          "a temperature below absolute zero", NULL);
   }

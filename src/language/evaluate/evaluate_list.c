@@ -136,6 +136,8 @@ part_figure (struct evaluation *ev, const struct node *part, const struct unit *
     return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, part->unit_at,
                          "the figure in brackets has its unit already", NULL);
   }
+  f->unit = v.unit ? f->unit : evaluation_unit (ev, f->unit);
+  evaluation_touch (ev, TOUCH_TYPED);
   f->si = v.unit ? v.si : unit_to_si (f->unit, v.si);
   if (part->below) {
     const double share[] = { [BELOW_ZERO] = 0, [BELOW_HALF] = 0.5, [BELOW_LIMIT] = 1 };

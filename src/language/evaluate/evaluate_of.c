@@ -151,6 +151,10 @@ trace_volume (struct evaluation *ev, const struct node *figure, const struct val
     return family_molar_volume (ev, quantity->measure.family, host,
                                 (quantity->words & WORD_REAL) != 0, Vm);
   }
+  if ((isnan (trace->T) || isnan (trace->p))
+      && !isnan (ev->settings->family[FAMILY_NONE].at.T)) {
+    return family_molar_volume (ev, FAMILY_NONE, host, false, Vm);
+  }
   if (isnan (trace->T) || isnan (trace->p)) {
     bool typed = figure->figure && figure->unit_text;
     fault_set_at (ev->fault, MESSAGE_STATE_MISSING, typed ? figure->unit_at : figure->at,

@@ -38,7 +38,8 @@ struct stand_in { const struct definition *definition; struct value value; };
 enum touch { TOUCH_SITE = 1u << 8, TOUCH_MODEL = 1u << 9, TOUCH_OXYGEN = 1u << 10,
              TOUCH_BELOW = 1u << 11, TOUCH_TOLERANCE = 1u << 12, TOUCH_BARE = 1u << 13,
              TOUCH_VOLUMES = 1u << 14, TOUCH_QUANTITY = 1u << 15,
-             TOUCH_VAPOUR = 1u << 16, TOUCH_COMBUSTION = 1u << 17 };
+             TOUCH_VAPOUR = 1u << 16, TOUCH_COMBUSTION = 1u << 17,
+             TOUCH_TYPED = 1u << 18 /* any figure, word or state as typed */ };
 static inline unsigned touch_family (enum reference_family f) { return 1u << (unsigned) f; }
 
 /* What the usual alternative to an assumption is.  The last two have none that is usual: they are
@@ -92,6 +93,9 @@ void evaluation_touch (struct evaluation *, unsigned bits);
 /* Adds an assumption unless the same one is there.  */
 void evaluation_assume (struct evaluation *, const struct assumption *);
 void evaluation_use (struct evaluation *, struct definition *);
+
+/* The unit UNIT is read as while a check tries another for a word of it; null: none.  */
+const struct unit *evaluation_unit (struct evaluation *, const struct unit *);
 
 /* ---- Uncertain figures (source.c) ---- */
 

@@ -94,7 +94,14 @@ moles_per_figure (struct evaluation *ev, const struct flow_figure *f, const stru
     return true;
   case FLOW_ACTUAL: {
     if (isnan (at->T) || isnan (at->p)) {
-      return no_state (ev, f);
+      if (isnan (ev->settings->family[FAMILY_NONE].at.T)) {
+        return no_state (ev, f);
+      }
+      if (!family_molar_volume (ev, FAMILY_NONE, counted, real, &Vm)) {
+        return false;
+      }
+      *per = 1 / Vm;
+      return true;
     }
     struct volume_question question = { counted, at->T, at->p, at->Z,
                                         (q->words & WORD_IDEAL) != 0
@@ -150,7 +157,9 @@ flow_from_quantity (struct evaluation *ev, const struct flow_figure *f, struct p
   const struct composition *counted = stream.gas;
   const struct species *water = ev->session->water;
   double y = composition_fraction (stream.gas, water);
-  bool dry = (f->quantity->words & WORD_DRY) && y > 0;
+  const struct trial *trial = &ev->settings->trial;
+  bool dry = (trial->dry || (!trial->wet && (f->quantity->words & WORD_DRY))) && y > 0;
+  evaluation_touch (ev, TOUCH_TYPED);
   if (dry && !(counted = composition_wetted (ev->arena, stream.gas, water, 0, ev->fault))) {
     fault_place (ev->fault, at);
     return false;

@@ -144,6 +144,8 @@ heat_per_mole (struct evaluation *ev, const struct composition *gas, bool net, d
   struct burnt burnt;
   struct calorific figures;
   struct heat_question q = { gas, 288.15, STANDARD_ATMOSPHERE, false, STANDARD_NONE };
+  net = net != ev->settings->trial.other_heat;
+  evaluation_touch (ev, TOUCH_TYPED);
   if (!split_stated (ev, gas, net, &burnt)) {
     return false;
   }
@@ -239,6 +241,23 @@ basis_text (struct evaluation *ev, const struct heat_question *q, int figure)
                        pressure_text (ev->arena, q->p, false), q->real ? "real" : "ideal", name);
 }
 
+/* The same figure of the other kind, net for gross.  */
+static int
+other_heat (int figure)
+{
+  switch (figure) {
+  case CALORIFIC_GROSS_MOLAR: return CALORIFIC_NET_MOLAR;
+  case CALORIFIC_NET_MOLAR: return CALORIFIC_GROSS_MOLAR;
+  case CALORIFIC_GROSS_MASS: return CALORIFIC_NET_MASS;
+  case CALORIFIC_NET_MASS: return CALORIFIC_GROSS_MASS;
+  case CALORIFIC_GROSS_VOLUME: return CALORIFIC_NET_VOLUME;
+  case CALORIFIC_NET_VOLUME: return CALORIFIC_GROSS_VOLUME;
+  case CALORIFIC_WOBBE: return CALORIFIC_NET_WOBBE;
+  case CALORIFIC_NET_WOBBE: return CALORIFIC_WOBBE;
+  default: return figure;
+  }
+}
+
 bool
 heat_figure (struct evaluation *ev, const struct heat_question *asked, int figure, double *value,
              const char **basis)
@@ -254,7 +273,7 @@ heat_figure (struct evaluation *ev, const struct heat_question *asked, int figur
     if (!known_figures (ev, &q, q.gas, &figures)) {
       return false;
     }
-    *value = figures.value[figure];
+    *value = figures.value[ev->settings->trial.other_heat ? other_heat (figure) : figure];
   } else if (!ideal_figure (ev, &q, figure, value)) {
     return false;
   }

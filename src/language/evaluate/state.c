@@ -24,6 +24,10 @@ bool
 quantity_pressure (struct evaluation *ev, const struct value *v, const char *typed, double *p)
 {
   *p = v->si;
+  if (ev->settings->trial.absolute_gauge && v->measure.sort == UNIT_ABSOLUTE && v->unit) {
+    *p += ev->settings->site_pressure;
+    evaluation_touch (ev, TOUCH_SITE);
+  }
   if (v->measure.sort != UNIT_SCALE || !v->unit || strcmp (v->unit->spelling, "atm") == 0) {
     return true;
   }
@@ -280,6 +284,22 @@ state_empty (struct place at)
                           .moist = UNSTATED, .at = at };
 }
 
+/* While a check tries it: what the state would be instead.  */
+static void
+try_other (struct evaluation *ev, struct state *state)
+{
+  const struct trial *trial = &ev->settings->trial;
+  evaluation_touch (ev, TOUCH_TYPED);
+  state->T = trial->T > 0 && !isnan (state->T) ? trial->T : state->T;
+  state->p = trial->p > 0 && !isnan (state->p) ? trial->p : state->p;
+  if (trial->no_moisture) {
+    state->moisture = MOISTURE_NONE;
+  } else if (trial->humidity > 0 && !isnan (state->T) && !isnan (state->p)) {
+    state->moisture = MOISTURE_HUMIDITY;
+    state->moist = trial->humidity;
+  }
+}
+
 bool
 evaluate_state (struct evaluation *ev, const struct node *node, struct state *state)
 {
@@ -289,6 +309,7 @@ evaluate_state (struct evaluation *ev, const struct node *node, struct state *st
       fault_place (ev->fault, item->at);
       return false;
     }
+  try_other (ev, state);
   return true;
 }
 
@@ -345,7 +366,8 @@ state_water (struct evaluation *ev, const struct state *state, const struct mois
   if (beyond_saturation (ev, state, at->T)) {
     return false;
   }
-  struct moist_question question = { asked[state->moisture], state->moist, at->T, at->p,
+  double p = ev->settings->trial.vapour_atmospheric ? STANDARD_ATMOSPHERE : at->p;
+  struct moist_question question = { asked[state->moisture], state->moist, at->T, p,
                                      applies_enhancement (ev, at->gas) };
   if (!moist_answer (&question, &answer, NULL, ev->fault)) {
     return false;

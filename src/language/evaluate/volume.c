@@ -16,7 +16,11 @@ family_molar_volume (struct evaluation *ev, enum reference_family family,
 {
   const struct family_setting *setting = &ev->settings->family[family];
   double ideal = GAS_CONSTANT * setting->at.T / setting->at.p;
-  assume_family (ev, family);
+  if (family == FAMILY_NONE) {
+    evaluation_touch (ev, touch_family (family));
+  } else {
+    assume_family (ev, family);
+  }
   evaluation_touch (ev, TOUCH_VOLUMES);
   if (!gas || !(real || ev->settings->real_volumes)) {
     *Vm = ideal;
@@ -141,17 +145,11 @@ model_molar_volume (struct evaluation *ev, const struct volume_question *q, doub
   return true;
 }
 
-bool
-actual_molar_volume (struct evaluation *ev, const struct volume_question *q, double *Vm, double *Z,
-                     const char **model)
+/* By the Z given, the model, or ideal where nobody's gas is.  */
+static bool
+volume_at_Z (struct evaluation *ev, const struct volume_question *q, double *Vm, double *Z,
+             const char **model)
 {
-  if (!(q->T > 0) || !(q->p > 0)) {
-    return fault_set (ev->fault, MESSAGE_RANGE,
-                      "a state needs a temperature and a pressure above zero", NULL);
-  }
-  if (q->gas) {
-    note_condensation (ev, q);
-  }
   if (!isnan (q->Z)) {
     *Z = q->Z;
     *model = "as given";
@@ -172,4 +170,32 @@ actual_molar_volume (struct evaluation *ev, const struct volume_question *q, dou
     return true;
   }
   return model_molar_volume (ev, q, Vm, Z, model);
+}
+
+bool
+actual_molar_volume (struct evaluation *ev, const struct volume_question *q, double *Vm, double *Z,
+                     const char **model)
+{
+  if (!(q->T > 0) || !(q->p > 0)) {
+    return fault_set (ev->fault, MESSAGE_RANGE,
+                      "a state needs a temperature and a pressure above zero", NULL);
+  }
+  const struct trial *trial = &ev->settings->trial;
+  evaluation_touch (ev, TOUCH_TYPED);
+  if (trial->Z_out || trial->Z > 0) {
+    *Z = trial->Z_out ? 1 : trial->Z;
+    *model = "ideal";
+    *Vm = *Z * GAS_CONSTANT * q->T / q->p;
+    return true;
+  }
+  if (q->gas) {
+    note_condensation (ev, q);
+  }
+  if (!volume_at_Z (ev, q, Vm, Z, model)) {
+    return false;
+  }
+  if (trial->Z_inverse) {
+    *Vm /= *Z * *Z;
+  }
+  return true;
 }

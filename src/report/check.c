@@ -1,0 +1,284 @@
+/* The verdict of a check as text: what was stated and what became of it, the computed figure, the
+   readings that fit, what is ruled out, and what would have to be true instead.
+
+   Looks like this, with the six columns of the margin in front:
+
+          3380 Nm3/h   1 READING FITS   74.0133 Nm3/h (2.1 %) below the computed figure; good to 5
+          computed .....   3454.01  Nm3/h   dry, 0 degC, 101.325 kPa, ideal-gas volume
+          fits .........   3379.5   Nm3/h   scf at 70 degF, 14.7 psia (mfc-70F)                  */
+#include "config.h"
+#include "report/report_private.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "result/check_verdict.h"
+#include "result/result.h"
+
+enum { GAP = 3, GAP_UNIT = 2, LABEL_WIDTH = 13 };
+
+/* The figures of all rows stand under each other.  */
+struct column { size_t whole, fraction, unit; };
+
+static size_t
+larger (size_t a, size_t b)
+{
+  return a > b ? a : b;
+}
+
+static void
+plain_figure (struct text *out, const struct report_style *style, double value)
+{
+  const size_t start = out->length;
+  figure_write (out, style, value);
+  /* In a sentence 5.00000 is 5.  */
+  if (strchr (out->bytes + start, '.') == NULL || strchr (out->bytes + start, 'e') != NULL)
+    return;
+  while (out->bytes[out->length - 1] == '0')
+    out->length--;
+  if (out->bytes[out->length - 1] == '.')
+    out->length--;
+  out->bytes[out->length] = '\0';
+}
+
+static void
+measure_one (const struct report_style *style, struct column *column, double value,
+             const char *unit)
+{
+  struct text figure;
+  text_init (&figure);
+  figure_write (&figure, style, value);
+  const size_t whole = figure_whole (figure.bytes);
+  column->whole = larger (column->whole, whole);
+  column->fraction = larger (column->fraction, figure.length - whole);
+  column->unit = larger (column->unit, shown_width (style, unit));
+  text_clear (&figure);
+}
+
+static struct column
+measure (const struct report_style *style, const struct check_verdict *v)
+{
+  struct column column = { 0, 0, 0 };
+  if (v->figures == NULL)
+    measure_one (style, &column, v->computed, v->unit);
+  for (const struct check_reading *r = v->readings; r != NULL; r = r->next)
+    measure_one (style, &column, r->value, r->unit);
+  for (const struct check_reading *r = v->ruled_out; r != NULL; r = r->next)
+    measure_one (style, &column, r->value, r->unit);
+  for (const struct check_need *n = v->needs; n != NULL; n = n->next)
+    if (isfinite (n->value))
+      measure_one (style, &column, n->value, n->unit);
+  for (const struct check_figure *f = v->figures; f != NULL; f = f->next)
+    measure_one (style, &column, f->computed, f->unit);
+  return column;
+}
+
+/* A row up to what is said of it.  LABEL: null, if the row above has the same.  */
+static void
+row_open (struct text *out, const struct report_style *style, const struct column *column,
+          const char *label)
+{
+  text_add_repeated (out, ' ', MARGIN);
+  if (label != NULL)
+    leader_add (out, style, label, LABEL_WIDTH);
+  else
+    text_add_repeated (out, ' ', LABEL_WIDTH);
+  (void) column;
+}
+
+static void
+row_figure (struct text *out, const struct report_style *style, const struct column *column,
+            double value, const char *unit)
+{
+  struct text figure;
+  text_init (&figure);
+  figure_write (&figure, style, value);
+  const size_t whole = figure_whole (figure.bytes);
+  text_add_repeated (out, ' ', GAP + column->whole - whole);
+  text_add (out, figure.bytes);
+  text_add_repeated (out, ' ', column->fraction - (figure.length - whole) + GAP_UNIT);
+  shown_add (out, style, unit);
+  text_add_repeated (out, ' ', column->unit - shown_width (style, unit) + GAP);
+  text_clear (&figure);
+}
+
+static void
+line_end (struct text *out)
+{
+  while (out->length > 0 && out->bytes[out->length - 1] == ' ')
+    out->bytes[--out->length] = '\0';
+  text_add_char (out, '\n');
+}
+
+static void
+percent_add (struct text *out, double ratio)
+{
+  const size_t start = out->length;
+  effect_write (out, fabs (ratio));
+  /* Without its sign: the sentence says above or below.  */
+  const char *figure = out->bytes + start;
+  if (*figure == '+') {
+    memmove (out->bytes + start, figure + 1, out->length - start);
+    out->length--;
+  }
+}
+
+static void
+outcome_add (struct text *out, const struct check_verdict *v)
+{
+  switch (v->outcome) {
+  case CHECK_HOLDS:
+    text_add (out, "HOLDS");
+    break;
+  case CHECK_READINGS:
+    text_add_format (out, v->reading_count == 1 ? "1 READING FITS" : "%zu READINGS FIT",
+                     v->reading_count);
+    break;
+  case CHECK_UNEXPLAINED:
+    text_add (out, "NOTHING EXPLAINS IT");
+    break;
+  }
+}
+
+static void
+difference_add (struct text *out, const struct report_style *style, const struct check_verdict *v)
+{
+  plain_figure (out, style, fabs (v->difference));
+  text_add_char (out, ' ');
+  shown_add (out, style, v->unit);
+  if (isfinite (v->deviation)) {
+    text_add (out, " (");
+    percent_add (out, v->deviation);
+    text_add (out, ")");
+  }
+  text_add_format (out, " %s the computed figure; good to ", v->difference < 0 ? "below" : "above");
+  plain_figure (out, style, v->limit);
+  text_add (out, v->by_digits ? " by its digits" : " by its uncertainty");
+}
+
+static void
+sheet_add (struct text *out, const struct report_style *style, const struct check_verdict *v,
+           const struct column *column)
+{
+  for (const struct check_figure *f = v->figures; f != NULL; f = f->next) {
+    row_open (out, style, column, f->name != NULL ? f->name : f->stated);
+    row_figure (out, style, column, f->computed, f->unit);
+    text_add (out, f->holds ? f->as_written ? "agrees as written" : "agrees"
+                            : "stands alone");
+    text_add (out, ", stated ");
+    shown_add (out, style, f->stated);
+    if (isfinite (f->deviation)) {
+      text_add (out, " (");
+      effect_write (out, f->deviation);
+      text_add (out, ")");
+    }
+    line_end (out);
+  }
+}
+
+static void
+computed_add (struct text *out, const struct report_style *style, const struct check_verdict *v,
+              const struct answer *a, const struct column *column)
+{
+  row_open (out, style, column, "computed");
+  row_figure (out, style, column, v->computed, v->unit);
+  weight_open (out, style, WEIGHT_DIM);
+  const bool moist = a != NULL && a->moisture != NULL && *a->moisture != '\0';
+  const bool based = a != NULL && a->basis != NULL && *a->basis != '\0';
+  if (moist)
+    shown_add (out, style, a->moisture);
+  if (moist && based)
+    text_add (out, ", ");
+  if (based)
+    shown_add (out, style, a->basis);
+  weight_close (out, style);
+  if (a != NULL && figure_is_uncertain (a->value, a->uncertainty)) {
+    text_add (out, moist || based ? ", " : "");
+    text_add (out, style->unicode ? "\u00B1 " : "+/- ");
+    plain_figure (out, style, a->uncertainty);
+  }
+  line_end (out);
+}
+
+static void
+readings_add (struct text *out, const struct report_style *style,
+              const struct check_reading *readings, const char *label,
+              const struct column *column)
+{
+  for (const struct check_reading *r = readings; r != NULL; r = r->next) {
+    row_open (out, style, column, r == readings ? label : NULL);
+    row_figure (out, style, column, r->value, r->unit);
+    shown_add (out, style, r->reading);
+    line_end (out);
+  }
+}
+
+static void
+ruled_out_add (struct text *out, const struct report_style *style, const struct check_verdict *v,
+               const struct column *column)
+{
+  for (const struct check_reading *r = v->ruled_out; r != NULL; r = r->next) {
+    row_open (out, style, column, r == v->ruled_out ? "ruled out" : NULL);
+    row_figure (out, style, column, r->value, r->unit);
+    shown_add (out, style, r->reading);
+    if (isfinite (r->deviation)) {
+      const double over = 1 / (1 + r->deviation) - 1;
+      text_add (out, ": ");
+      percent_add (out, over);
+      text_add (out, over > 0 ? " above the claim" : " below the claim");
+    }
+    line_end (out);
+  }
+}
+
+static void
+needs_add (struct text *out, const struct report_style *style, const struct check_verdict *v,
+           const struct column *column)
+{
+  for (const struct check_need *n = v->needs; n != NULL; n = n->next) {
+    row_open (out, style, column, n == v->needs ? "instead" : NULL);
+    if (isfinite (n->value)) {
+      row_figure (out, style, column, n->value, n->unit);
+      text_add (out, "would have to be the ");
+      shown_add (out, style, n->what);
+    } else {
+      text_add_repeated (out, ' ', GAP);
+      text_add (out, "no ");
+      shown_add (out, style, n->what);
+      text_add (out, " from ");
+      plain_figure (out, style, n->least);
+      text_add (out, " to ");
+      plain_figure (out, style, n->greatest);
+      text_add_char (out, ' ');
+      shown_add (out, style, n->unit);
+      text_add (out, *n->unit ? " does it" : "does it");
+    }
+    line_end (out);
+  }
+}
+
+void
+report_check (struct text *out, const struct report_style *style, const struct result *result)
+{
+  const struct check_verdict *v = result->check;
+  const struct column column = measure (style, v);
+  text_add_repeated (out, ' ', MARGIN);
+  weight_open (out, style, WEIGHT_BOLD);
+  shown_add (out, style, v->stated);
+  text_add_repeated (out, ' ', GAP);
+  outcome_add (out, v);
+  weight_close (out, style);
+  text_add_repeated (out, ' ', GAP);
+  if (v->figures != NULL)
+    text_add_format (out, "%zu of %zu figures agree", v->agreeing, v->figure_count);
+  else
+    difference_add (out, style, v);
+  line_end (out);
+  if (v->figures != NULL)
+    sheet_add (out, style, v, &column);
+  else
+    computed_add (out, style, v, result->answers, &column);
+  readings_add (out, style, v->readings, v->outcome == CHECK_HOLDS ? "fits too" : "fits", &column);
+  ruled_out_add (out, style, v, &column);
+  needs_add (out, style, v, &column);
+}
