@@ -4,6 +4,8 @@ noinst_LIBRARIES += %D%/libsupport.a
   %D%/arena.c \
   %D%/arena.h \
   %D%/check.h \
+  %D%/csv.c \
+  %D%/csv.h \
   %D%/decimal.c \
   %D%/decimal.h \
   %D%/distance.c \

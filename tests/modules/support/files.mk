@@ -12,6 +12,10 @@ suites += %D%/t_built_in
 %C%_t_built_in_SOURCES = %D%/t_built_in.c
 %C%_t_built_in_LDADD = $(with_support)
 
+suites += %D%/t_csv
+%C%_t_csv_SOURCES = %D%/t_csv.c
+%C%_t_csv_LDADD = $(with_support)
+
 suites += %D%/t_fault
 %C%_t_fault_SOURCES = %D%/t_fault.c
 %C%_t_fault_LDADD = $(with_support)
