@@ -36,7 +36,10 @@ tablesdir = $(pkgdatadir)/tables
 dist_tables_DATA = $(tables) $(equation_tables)
 
 demodir = $(pkgdatadir)/tables/demo
-dist_demo_DATA = %D%/demo/morning.gw
+dist_demo_DATA = \
+  %D%/demo/cleaned.csv \
+  %D%/demo/digester.csv \
+  %D%/demo/morning.gw
 
 # Made from the tables, in the build tree only: every table as text, the kinds of message, and
 # what stands behind each kind.

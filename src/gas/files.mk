@@ -12,6 +12,14 @@ noinst_LIBRARIES += %D%/libgas.a
   %D%/formula.h \
   %D%/gathering.c \
   %D%/gathering.h \
+  %D%/laboratory.c \
+  %D%/laboratory.h \
+  %D%/laboratory_amount.c \
+  %D%/laboratory_by_component.c \
+  %D%/laboratory_by_sample.c \
+  %D%/laboratory_heading.c \
+  %D%/laboratory_layout.c \
+  %D%/laboratory_private.h \
   %D%/moisture.c \
   %D%/moisture.h \
   %D%/name_index.c \

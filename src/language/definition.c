@@ -54,6 +54,10 @@ definition_make (struct session *session, const char *source, enum name_kind kin
     arena_destroy (arena);
     return NULL;
   }
+  if (statement->from_file && !file_bind (session, d, statement, fault)) {
+    arena_destroy (arena);
+    return NULL;
+  }
   struct name_list needs = { arena, NULL, 0, 0 };
   tree_visit (statement, collect_name, &needs);
   d->statement = statement;
@@ -170,10 +174,6 @@ stated_gas (struct evaluation *ev, const struct statement *s, struct value *out)
 static bool
 gas_body (struct evaluation *ev, const struct statement *s, struct value *out)
 {
-  if (s->text) {
-    return fault_set_at (ev->fault, MESSAGE_NOT_AVAILABLE, s->text_at, "analyses from files",
-                         NULL);
-  }
   if (s->stated) {
     return stated_gas (ev, s, out);
   }
@@ -305,6 +305,7 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
   result_init (&notes, d->cache, d->source);
   evaluation_init (&ev, session, &notes, fault);
   ev.arena = d->cache;
+  file_tell (d, &notes);
   if (!body (&ev, d, &value, &state)) {
     return false;
   }
@@ -372,10 +373,12 @@ bring_up_to_date (struct evaluation *ev, struct definition *d, struct place at)
 
 /* Does the cache say what this evaluation, with its other settings or moved figure, would find? */
 static bool
-cache_serves (const struct evaluation *ev, const struct definition *d)
+cache_serves (const struct evaluation *ev, struct definition *d)
 {
   return !(ev->overridden & d->touched) && !is_moved (ev, d)
-         && !(ev->stand_in_count && (d->touched & TOUCH_QUANTITY));
+         && !(ev->stand_in_count && (d->touched & TOUCH_QUANTITY))
+         && !(ev->stand_in_count && ev->stand_ins->tree
+              && definition_leans (ev->session, d, ev->stand_ins->definition->name));
 }
 
 /* What a definition came to under the settings and shifts of one evaluation.  */
@@ -413,12 +416,32 @@ work_out (struct evaluation *ev, const struct definition *d, struct place at)
   return new;
 }
 
+/* A gas tried in place of another: worked out where it stands, so that its figures can be moved. */
+static const struct value *
+stand_in_gas (struct evaluation *ev, const struct stand_in *in)
+{
+  struct value *value = ARENA_NEW (ev->arena, struct value);
+  const char *subject = ev->subject;
+  ev->subject = in->definition->name;
+  bool done = evaluate (ev, in->tree, NULL, value);
+  ev->subject = subject;
+  if (!done || value->kind != VALUE_GAS) {
+    return NULL;
+  }
+  struct gas_value *gas = ARENA_NEW (ev->arena, struct gas_value);
+  *gas = *value->gas;
+  gas->name = in->definition->name;
+  value->gas = gas;
+  return value;
+}
+
 const struct value *
 definition_value (struct evaluation *ev, struct definition *d, struct place at)
 {
   for (size_t i = 0; i < ev->stand_in_count; i++)
     if (ev->stand_ins[i].definition == d) {
-      return &ev->stand_ins[i].value;
+      return ev->stand_ins[i].tree ? stand_in_gas (ev, &ev->stand_ins[i])
+                                   : &ev->stand_ins[i].value;
     }
   if (!bring_up_to_date (ev, d, at)) {
     return NULL;

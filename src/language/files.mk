@@ -60,6 +60,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/evaluate/volume.c \
   %D%/evaluate/wording.c \
   %D%/evaluate/wording.h \
+  %D%/from_file.c \
   %D%/mentions.c \
   %D%/names.c \
   %D%/parse.h \

@@ -37,6 +37,7 @@ struct definition {
   size_t assumption_count, source_count;
   struct remark *notes, *cautions;         /* from the cache */
   bool told;                               /* its notes have stood under an answer */
+  struct file_read *file;                  /* of a gas from a file: what was read; or null */
 };
 
 /* One change that undo can take back; the changes of a group are taken back together.  */
@@ -96,6 +97,31 @@ const struct state *definition_state (struct evaluation *, struct definition *,
 void definition_tell (struct session *, struct definition *, bool all, struct result *);
 /* Cautions that follow from what is in a gas.  NAME: what it is called.  */
 void caution_gas (struct result *, const struct composition *, const char *name);
+
+/* ---- Files (from_file.c) ---- */
+
+struct laboratory; struct text;
+
+/* Appends what a file holds; false with errno.  */
+bool file_bytes (const char *path, struct text *) MUST_CHECK;
+/* The analyses in the file a statement names, in ARENA.  Kinds: file, laboratory-...  */
+const struct laboratory *file_analyses (struct session *, struct arena *,
+                                        const struct statement *, struct fault *) MUST_CHECK;
+/* A sample as a list of parts, as if it were typed: a copy of the statement's list with the
+   sample's parts.  *REMARKS, if not null, takes what has to be said of it.                      */
+struct node *file_list (struct session *, struct arena *, const struct statement *,
+                        const struct laboratory *, size_t sample, struct remark **remarks,
+                        struct fault *) MUST_CHECK;
+/* Reads the file of a gas that is being defined: its statement gets its parts, and the definition
+   what is to be said.                                                                           */
+bool file_bind (struct session *, struct definition *, struct statement *, struct fault *)
+  MUST_CHECK;
+/* Notes what became of the files of gases that D leans on since they were read.  */
+void file_tell_changes (struct session *, struct definition *, struct result *);
+/* What a statement's file came to, under an answer.  */
+void file_tell (const struct definition *, struct result *);
+/* What was understood of a file, as remarks in ARENA.  */
+struct remark *file_remarks (struct arena *, const char *path, const struct laboratory *);
 
 /* ---- Names (names.c) ---- */
 

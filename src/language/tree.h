@@ -143,8 +143,10 @@ struct statement {
   const struct node *names;       /* NODE_NAMEs of forget, trim (with the ends of its range as
                                      `a` and `b`, or null), components */
   const struct node *value;       /* the sum, list, chain or state; of normalise the whole
-                                     NODE_NORMALISED; of gas from a NODE_LIST without items that
-                                     has the basis, or null; of a setting its figure */
+                                     NODE_NORMALISED; of a setting its figure */
+  struct node *from_file;         /* of gas from: the NODE_LIST in `value`, without items until
+                                     the file is read; unit and words as typed, `figure` the
+                                     decimal sign, or null */
   struct target *targets;
   const char *text, *sample;      /* a text in quotes: file names */
   struct place text_at;

@@ -8,7 +8,7 @@ trap 'rm -rf "$work"' EXIT
 here=$top/tests/documents
 awk=${AWK:-awk}
 cd "$work" || exit 99
-cp "$top/tables/demo/morning.gw" . || exit 99
+cp "$top"/tables/demo/* . || exit 99
 # Whose own settings must not count.
 HOME=$work
 PATH=$work/bin:$PATH

@@ -22,10 +22,10 @@ replay() {
   cat new > "$document"
 }
 
+cp "$top"/tables/demo/* .
 LC_ALL=C "$awk" -f "$top/man/topics.awk" "$top/src/language/topics.def" "$top/man/gaswright.7" > page
 cat page > "$top/man/gaswright.7"
 replay "$top/man/gaswright.7" .EX .EE -v roff=1
 replay "$top/README.md" '```gaswright' '```'
-cp "$top/tables/demo/morning.gw" .
 "$GASWRIGHT" morning.gw > morning.out
 cat morning.out > "$here/morning.golden"

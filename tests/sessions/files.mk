@@ -17,6 +17,7 @@ session_tests = \
   %D%/contract.sh \
   %D%/energy.sh \
   %D%/figures.sh \
+  %D%/files.sh \
   %D%/quarrels.sh \
   %D%/refused.sh \
   %D%/roundtrips.sh \

@@ -21,6 +21,15 @@ number_cell (struct cell *cell, double value)
   cell->value = value;
 }
 
+/* What stands behind an uncertainty that is no standard one.  */
+static const char *
+spread_kind_text (struct arena *arena, const struct spread *spread)
+{
+  return spread->kind == SPREAD_EXPANDED
+           ? arena_format (arena, " (k=%s)", figure_text (arena, spread->k))
+         : spread->kind == SPREAD_LIMITS ? " (limits)" : "";
+}
+
 /* What the user typed for a part: "58.2 +/- 0.3", "850 ppm", "rest", "<5 ppm".  */
 static const char *
 typed_amount (struct session *session, struct arena *arena, const struct node *part)
@@ -34,8 +43,11 @@ typed_amount (struct session *session, struct arena *arena, const struct node *p
     return "computed";
   }
   const char *spread = a->spread
-                         ? arena_format (arena, " ± %s%s", a->spread->figure,
-                                         a->spread->relative ? " %" : "")
+                         ? arena_format (arena, " ± %s%s%s%s", a->spread->figure,
+                                         a->spread->relative ? " %" : a->spread->unit ? " " : "",
+                                         a->spread->unit && !a->spread->relative
+                                           ? a->spread->unit->spelling : "",
+                                         spread_kind_text (arena, a->spread))
                          : "";
   return arena_format (arena, "%s%s%s%s%s", part->below ? "<" : "", a->figure,
                        a->unit_text ? " " : "", a->unit_text ? a->unit_text : "", spread);

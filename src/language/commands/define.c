@@ -25,7 +25,8 @@ formula_of (const struct definition *d)
   return equals ? equals + 1 + strspn (equals + 1, " ") : "";
 }
 
-/* `normalise lab into N2` is `gas lab = (its formula) normalised into N2`.  */
+/* `normalise lab into N2` is `gas lab = (its formula) normalised into N2`, of a gas from a file
+   its statement with these words behind it.                                                     */
 bool
 command_normalise (struct session *session, const struct statement *s, struct result *result,
                    struct fault *fault)
@@ -41,9 +42,12 @@ command_normalise (struct session *session, const struct statement *s, struct re
   }
   const struct node *into = s->value->b;
   bool list = d->statement->value && d->statement->value->kind == NODE_LIST;
-  const char *source = arena_format (result->arena, "gas %s = %s%s%s normalised%s%s",
-                                     name_text (result->arena, s->name),
-                                     list ? "(" : "", formula_of (d), list ? ")" : "",
+  const char *before = d->statement->from_file
+                         ? d->source
+                         : arena_format (result->arena, "gas %s = %s%s%s",
+                                         name_text (result->arena, s->name), list ? "(" : "",
+                                         formula_of (d), list ? ")" : "");
+  const char *source = arena_format (result->arena, "%s normalised%s%s", before,
                                      into ? " into " : "",
                                      into ? name_text (result->arena, into->text) : "");
   return name_define (session, s, source, NAME_GAS, result, fault);

@@ -2,7 +2,6 @@
 #include "language/commands/commands.h"
 
 #include <errno.h>
-#include <stdio.h>
 #include <string.h>
 #include "result/result.h"
 #include "support/arena.h"
@@ -11,25 +10,6 @@
 #include "support/text.h"
 
 enum { OPEN_DEEPEST = 16 };       /* files that open files */
-
-static bool
-read_file (const char *path, struct text *text)
-{
-  char block[1 << 14];
-  size_t n;
-  FILE *file = fopen (path, "r");
-  if (!file) {
-    return false;
-  }
-  while ((n = fread (block, 1, sizeof block, file)) > 0) {
-    text_add_bytes (text, block, n);
-  }
-  int reason = errno;
-  bool done = !ferror (file);
-  (void) fclose (file);
-  errno = reason;
-  return done;
-}
 
 /* A fault in a file that is opened: at the statement that opens it, saying where in the file.  */
 static bool
@@ -101,7 +81,7 @@ command_open (struct session *session, const struct statement *s, struct result 
                          "files that open each other, too deep");
   }
   text_init (&text);
-  if (!read_file (s->text, &text)) {
+  if (!file_bytes (s->text, &text)) {
     text_clear (&text);
     return fault_set_at (fault, MESSAGE_FILE, s->text_at, s->text, strerror (errno));
   }

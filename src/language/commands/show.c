@@ -20,6 +20,7 @@ show_definition (struct session *session, const struct statement *s, struct defi
     return false;
   }
   definition_tell (session, d, true, result);
+  file_tell_changes (session, d, result);
   switch (d->kind) {
   case NAME_GAS:
     return card_of_gas (session, d->value.gas, d->name, result, fault);

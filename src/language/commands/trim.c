@@ -83,7 +83,7 @@ add_quantity (struct trim *t, const struct node *name, size_t i)
   if (!value) {
     return false;
   }
-  t->moved[i] = (struct stand_in) { d, *value };
+  t->moved[i] = (struct stand_in) { d, *value, NULL };
   t->before[i] = t->x[i] = d->statement->value->number;
   if (!add_range (t, name, i)) {
     return false;

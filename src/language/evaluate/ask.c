@@ -240,6 +240,7 @@ question_answer (struct evaluation *ev, const struct statement *s)
   caution_value (ev, s, &value);
   for (size_t i = 0; i < ev->used_count; i++) {
     definition_tell (ev->session, ev->used[i], false, result);
+    file_tell_changes (ev->session, ev->used[i], result);
   }
   return true;
 }

@@ -19,6 +19,8 @@ evaluation_again (struct evaluation *ev, const struct evaluation *first, struct 
 {
   evaluation_init (ev, first->session, NULL, fault);
   ev->arena = first->arena;
+  ev->stand_ins = first->stand_ins;
+  ev->stand_in_count = first->stand_in_count;
   ev->describe = false;
 }
 

@@ -31,8 +31,10 @@ struct source {
 /* A source moved BY standard uncertainties.  */
 struct shift { const void *what; double by; };
 
-/* A value tried in place of what a definition says.  */
-struct stand_in { const struct definition *definition; struct value value; };
+/* A value tried in place of what a definition says; TREE, if not null, is a gas to be worked out
+   in its place.                                                                                 */
+struct stand_in { const struct definition *definition; struct value value;
+                  const struct node *tree; };
 
 /* What an answer leaned on, as bits; the bits below FAMILY_COUNT are those of the families.  */
 enum touch { TOUCH_SITE = 1u << 8, TOUCH_MODEL = 1u << 9, TOUCH_OXYGEN = 1u << 10,

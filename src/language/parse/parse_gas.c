@@ -3,28 +3,51 @@
 
 static const char FORM[] = "gas NAME = list, or gas NAME from \"file\"";
 
-/* "from" TEXT [ "sample" TEXT ] [ UNIT ] { word }  */
+static const char FROM_FORM[] = "gas NAME from \"file\" sample \"ID\" mol% dry";
+
+/* [ "decimal" ( "comma" | "point" ) ]  */
 static bool
-parse_from (struct parser *p, struct statement *statement)
+parse_decimal (struct parser *p, struct node *list)
 {
+  if (!accept_word (p, "decimal"))
+    return true;
+  if (accept_word (p, "comma"))
+    list->figure = ",";
+  else if (accept_word (p, "point"))
+    list->figure = ".";
+  else
+    return fail_here (p, MESSAGE_WORD_UNEXPECTED, token_text (p, &p->token),
+                      "decimal comma, or decimal point");
+  return true;
+}
+
+bool
+parse_from_file (struct parser *p, struct statement *statement, bool one)
+{
+  /* TEXT [ "sample" TEXT ] [ UNIT ] { word } [ "decimal" ( "comma" | "point" ) ] { change }  */
   struct unit_read read;
   statement->text_at = p->token.at;
   if (!expect_text (p, &statement->text, "a file name stands in double quotes"))
     return false;
-  if (accept_word (p, "sample")
+  if (one && accept_word (p, "sample")
       && !expect_text (p, &statement->sample, "a sample name stands in double quotes"))
     return false;
-  if (opens_unit (p, &p->token)) {
-    struct node *basis = node_new (p, NODE_LIST, p->token.at);
-    if (!parse_unit (p, &read) || !parse_unit_words (p, &basis->words))
+  struct node *list = node_new (p, NODE_LIST, statement->text_at);
+  if (!parse_decimal (p, list))
+    return false;
+  if (opens_unit (p, &p->token) && !at_word (p, "decimal")) {
+    if (!parse_unit (p, &read))
       return false;
-    basis->unit = read.unit;
-    basis->text = basis->unit_text = read.text;
-    basis->unit_at = read.at;
-    node_close (p, basis);
-    statement->value = basis;
+    list->unit = read.unit;
+    list->text = list->unit_text = read.text;
+    list->unit_at = read.at;
   }
-  return expect_end (p, "gas NAME from \"file\" sample \"ID\" mol%");
+  if (!parse_unit_words (p, &list->words) || !parse_decimal (p, list))
+    return false;
+  node_close (p, list);
+  statement->from_file = list;
+  statement->value = parse_changes (p, list);
+  return statement->value != NULL && expect_end (p, FROM_FORM);
 }
 
 /* Is the property a bare number?  */
@@ -112,7 +135,7 @@ parse_gas (struct parser *p, struct statement *statement)
   if (!parse_new_name (p, &statement->name, &statement->name_at))
     return false;
   if (accept_word (p, "from"))
-    return parse_from (p, statement);
+    return parse_from_file (p, statement, true);
   if (accept_word (p, "with"))
     return parse_with (p, statement);
   if (!expect_equals (p, FORM))

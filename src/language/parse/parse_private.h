@@ -203,6 +203,8 @@ struct target *parse_targets (struct parser *, bool one);
 
 bool parse_statement (struct parser *, struct statement *);             /* parse_statement.c */
 bool parse_gas (struct parser *, struct statement *);                   /* parse_gas.c */
+/* What follows `from`; ONE: a sample may be named.  */
+bool parse_from_file (struct parser *, struct statement *, bool one);
 bool parse_set (struct parser *, struct statement *);                   /* parse_set.c */
 bool parse_trim (struct parser *, struct statement *);                  /* parse_trim.c */
 bool parse_check (struct parser *, struct statement *);

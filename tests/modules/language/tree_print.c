@@ -370,7 +370,7 @@ print_gas (struct text *out, const struct statement *s)
     text_add_format (out, " (from \"%s\")", s->text);
   if (s->sample != NULL)
     text_add_format (out, " (sample \"%s\")", s->sample);
-  if (s->text != NULL && s->value != NULL)
+  if (s->text != NULL && s->value == s->from_file)
     print_basis (out, s->value);
   else if (s->value != NULL)
     print_each (out, s->value);
