@@ -116,6 +116,15 @@ tell "$(LC_ALL=C.UTF-8 "$GASWRIGHT" morning.gw > morning.out 2> morning.err || e
 tell "$("$GASWRIGHT" --format json morning.gw > morning.json || echo "exit status $?"
   [ -s morning.json ] || echo "nothing printed")" "the morning runs in JSON"
 
+tell "$(for quarrel in "$top"/tables/demo/quarrel_*.gw; do
+    cp "$quarrel" . && "$GASWRIGHT" "${quarrel##*/}" || echo "exit status $?"
+  done 2>&1 | diff "$here/quarrels.golden" -)" "the quarrels at Larkmoor Works end in their verdicts"
+tell "$(for quarrel in quarrel_*.gw; do
+    "$GASWRIGHT" "$quarrel" | awk -v name="$quarrel" '
+      / READINGS? FITS? | HOLDS | NOTHING EXPLAINS IT / { lines = 0; seen = 1 } { lines++ }
+      END { if (!seen || lines > 20) print name ": " lines " lines, verdict " seen + 0 }'
+  done)" "each verdict takes one screen"
+
 if command -v python3 > out 2>&1; then
   tell "$(PYTHONDONTWRITEBYTECODE=1 python3 "$here/morning.py" "$top" morning.json > said 2>&1 ||
     { echo "it failed"; grep -v '^ok' said; }

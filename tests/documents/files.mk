@@ -4,6 +4,7 @@ EXTRA_DIST += \
   %D%/morning.golden \
   %D%/morning.py \
   %D%/preamble.gw \
+  %D%/quarrels.golden \
   %D%/renew.sh \
   %D%/replay.awk
 TESTS += %D%/examples.sh

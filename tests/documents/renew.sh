@@ -29,3 +29,8 @@ replay "$top/man/gaswright.7" .EX .EE -v roff=1
 replay "$top/README.md" '```gaswright' '```'
 "$GASWRIGHT" morning.gw > morning.out
 cat morning.out > "$here/morning.golden"
+for quarrel in "$top"/tables/demo/quarrel_*.gw; do
+  cp "$quarrel" .
+  "$GASWRIGHT" "${quarrel##*/}"
+done > quarrels.out
+cat quarrels.out > "$here/quarrels.golden"
