@@ -244,7 +244,7 @@ counts (const struct check *check, const char *as)
   char element[] = { as[0], '\0' };
   return (v->kind == VALUE_PART || v->kind == VALUE_TRACE) && v->species.count == 1
          && species_atoms (v->species.at[0], element) > 0
-         && strcmp (v->species.at[0]->key, as) != 0;
+         && (check->target.counted_as || strcmp (v->species.at[0]->key, as) != 0);
 }
 
 /* Can the rule move anything on these sides?  */

@@ -137,9 +137,9 @@ search_needs (struct check *check)
   struct check_need *first = NULL, **end = &first;
   for (int q = NEED_T; q <= NEED_Z; q++) {
     struct check_need **before = end;
-    for (int side = 0; side < SIDES && end == before; side++) {
+    for (int side = 0; side < SIDES; side++) {
       struct unknown u = { check, (enum quantity) q, side, FAMILY_NONE };
-      add_need (&u, NULL, &end);
+      add_need (&u, end == before ? NULL : "the stated figure", &end);
     }
   }
   for (int side = 0; side < SIDES; side++)

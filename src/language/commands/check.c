@@ -2,10 +2,11 @@
 #include "language/commands/commands.h"
 
 #include <math.h>
+#include "gas/composition.h"
 #include "language/check/hold.h"
 #include "language/check/search.h"
 #include "language/evaluate/flow.h"
-#include "language/evaluate/wording.h"
+#include "property/enhancement.h"
 #include "result/check_verdict.h"
 #include "result/result.h"
 #include "support/arena.h"
@@ -20,7 +21,7 @@ readings_of (struct session *session, struct fault *fault)
   return session->readings;
 }
 
-/* An actual volume of a dry gas: what offers forget.  */
+/* An actual volume of dry air: what offers of blowers forget.  */
 static void
 note_inlet (struct check *check, struct result *result)
 {
@@ -28,8 +29,8 @@ note_inlet (struct check *check, struct result *result)
   bool flow;
   const struct value *v = &check->value;
   if (flow_basis_of (&m, &flow) == FLOW_ACTUAL && flow && v->kind == VALUE_STREAM
-      && check->target.state && *moisture_word (&(struct evaluation) { .session = check->session },
-                                                v->stream.gas) == 'd') {
+      && check->target.state && enhancement_is_for (v->stream.gas)
+      && !(composition_fraction (v->stream.gas, check->session->water) > 0)) {
     result_remark (result, MESSAGE_NOTE_CHECK_INLET, NULL, NULL);
   }
 }
@@ -66,6 +67,7 @@ command_check (struct session *session, const struct statement *s, struct result
   struct check_verdict *v = ARENA_NEW (result->arena, struct check_verdict);
   const struct readings *readings = readings_of (session, fault);
   if (!readings) {
+    fault_place (fault, s->at);
     return false;
   }
   bool done = check_hold (&check, session, s, s->claim, result, fault)

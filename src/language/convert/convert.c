@@ -115,7 +115,7 @@ try_other (struct conversion *c)
   c->words |= trial->dry ? WORD_DRY : 0;
   c->words &= trial->wet ? ~ (unsigned) WORD_DRY : ~0u;
   c->state.oxygen = trial->no_oxygen ? UNSTATED : c->state.oxygen;
-  c->counted_as = trial->counted_as && !c->counted_as ? trial->counted_as : c->counted_as;
+  c->counted_as = trial->counted_as ? trial->counted_as : c->counted_as;
 }
 
 static bool

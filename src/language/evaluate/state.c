@@ -292,7 +292,7 @@ try_other (struct evaluation *ev, struct state *state)
   evaluation_touch (ev, TOUCH_TYPED);
   state->T = trial->T > 0 && !isnan (state->T) ? trial->T : state->T;
   state->p = trial->p > 0 && !isnan (state->p) ? trial->p : state->p;
-  if (trial->no_moisture) {
+  if (trial->no_moisture && state->moisture != MOISTURE_DRY) {
     state->moisture = MOISTURE_NONE;
   } else if (trial->humidity > 0 && !isnan (state->T) && !isnan (state->p)) {
     state->moisture = MOISTURE_HUMIDITY;

@@ -4,6 +4,10 @@
 #   %C%_t_NAME_SOURCES = %D%/t_NAME.c
 #   %C%_t_NAME_LDADD = $(with_language)
 
+suites += %D%/t_check
+%C%_t_check_SOURCES = %D%/t_check.c
+%C%_t_check_LDADD = $(with_language)
+
 suites += %D%/t_parse
 %C%_t_parse_SOURCES = \
   %D%/t_parse.c \
