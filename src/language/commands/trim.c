@@ -280,6 +280,8 @@ keep (struct trim *t, struct result *result, struct fault *fault)
     if (!done) {
       return false;
     }
+    /* From here on the name means another definition.  */
+    t->moved[i].definition = name_find (t->session, name->text, strlen (name->text));
   }
   return true;
 }

@@ -2,6 +2,8 @@
 #include "language/commands/trim.h"
 
 #include <math.h>
+#include <string.h>
+#include "gas/species.h"
 #include "language/evaluate/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
@@ -90,7 +92,7 @@ values_text (const struct trim *t, const double x[])
     const char *name = t->moved[i].definition->name;
     bool beyond = !(t->most[i] < HUGE_VAL) && x[i] > 1e6 * t->scale[i];
     text = joined (t->arena, text,
-                   beyond ? arena_format (t->arena, "a %s that outweighs all else", name)
+                   beyond ? arena_format (t->arena, "%s outweighing all else", name)
                    : arena_format (t->arena, "%s %s", name, with_unit (t, x[i], unit_of (t, i))));
   }
   return text;
@@ -176,9 +178,41 @@ tell_reach (struct trim *t, struct result *result)
                                with_unit (t, low, unit), name,
                                with_unit (t, t->least[0], unit_of (t, 0))),
                  arena_format (t->arena, "%s with %s", with_unit (t, high, unit),
-                               open ? arena_format (t->arena, "a %s that outweighs all else", name)
+                               open ? arena_format (t->arena, "%s outweighing all else", name)
                                : arena_format (t->arena, "%s %s", name,
                                                with_unit (t, end, unit_of (t, 0)))));
+}
+
+/* Of several quantities: what an aim comes to with each of them alone, where it lies between.  */
+static void
+tell_sources (struct trim *t, const struct aim *aim, struct result *result)
+{
+  double *x = ARENA_ARRAY (t->arena, t->count, double), low = HUGE_VAL, high = -HUGE_VAL, here;
+  const char *text = "", *unit = aim_unit (t, aim);
+  struct fault unheard;
+  fault_init (&unheard, t->arena);
+  if (t->count < 2 || aim->left->kind != NODE_OF || aim->is != COMPARE_EQUAL
+      || !trim_figure (t, aim, t->x, &here, &unheard)) {
+    return;
+  }
+  for (size_t i = 0; i < t->count; i++) {
+    double value;
+    for (size_t k = 0; k < t->count; k++) {
+      x[k] = k == i ? fmax (t->x[k], t->least[k]) : t->least[k];
+    }
+    if (!(x[i] > 0) || !trim_figure (t, aim, x, &value, &unheard)) {
+      return;
+    }
+    low = fmin (low, value);
+    high = fmax (high, value);
+    text = joined (t->arena, text, arena_format (t->arena, "%s with %s alone",
+                                                 with_unit (t, value, unit),
+                                                 t->moved[i].definition->name));
+  }
+  if ((here - low) * (here - high) < 0) {
+    result_remark (result, MESSAGE_NOTE_TRIM_SOURCES,
+                   node_text (t->arena, t->statement, aim->left), text);
+  }
 }
 
 /* "12 to 48.2 kg/h", "5 kg/h", "12 kg/h and up" */
@@ -223,6 +257,56 @@ tell_others (struct trim *t, const struct search_finding *found, struct result *
   }
   if (*all) {
     result_remark (result, MESSAGE_TAKEN_TRIM_OTHERS, all, NULL);
+  }
+}
+
+/* Components that are mixed as they are, without a gas of the user's, into what a stream is.  */
+struct pure { const struct trim *t; const char *but, *names; };
+
+static void
+add_pure (const struct node *node, void *with)
+{
+  struct pure *p = with;
+  const struct species *species;
+  const char *candidates;
+  if (node->kind != NODE_OF || node->b->kind != NODE_NAME
+      || name_find (p->t->session, node->b->text, strlen (node->b->text))
+      || species_find (p->t->session->vocabulary.species, node->b->text,
+                       strlen (node->b->text), &species, &candidates) == SPECIES_NONE
+      || strcmp (species->key, p->but) == 0 || strstr (p->names, species->key)) {
+    return;
+  }
+  p->names = joined (p->t->arena, p->names, species->key);
+}
+
+/* An aim at a trace: what is mixed in as a bare component counts as free of it.  */
+#define TRACE_AIMED_AT 0.01
+
+static void
+tell_pure (struct trim *t, const struct aim *aim, struct result *result)
+{
+  const struct node *left = aim->left;
+  const struct species *species;
+  const char *candidates;
+  struct value right;
+  struct evaluation ev;
+  struct fault unheard;
+  fault_init (&unheard, t->arena);
+  evaluation_again (&ev, t->first, &unheard);
+  if (left->kind != NODE_OF || left->a->kind != NODE_NAME || left->b->kind != NODE_NAME
+      || species_find (t->session->vocabulary.species, left->a->text, strlen (left->a->text),
+                       &species, &candidates) == SPECIES_NONE
+      || !evaluate_quantity (&ev, aim->right, &right) || right.measure.ratio == RATIO_NONE
+      || !(right.si < TRACE_AIMED_AT)) {
+    return;
+  }
+  struct definition *d = name_find (t->session, left->b->text, strlen (left->b->text));
+  struct pure pure = { t, species->key, "" };
+  if (d) {
+    tree_visit (d->statement, add_pure, &pure);
+  }
+  if (*pure.names) {
+    result_remark (result, MESSAGE_NOTE_TRIM_PURE, pure.names, species->key);
   }
 }
 
@@ -289,6 +373,10 @@ trim_tell (struct trim *t, const struct search_finding *found, bool moved, struc
   }
   if (!best && moved && t->count > 1 && equalities < t->count) {
     result_remark (result, MESSAGE_TAKEN_TRIM_LITTLE, trim_names (t), NULL);
+  }
+  for (const struct aim *a = t->statement->aims; a; a = a->next) {
+    tell_pure (t, a, result);
+    tell_sources (t, a, result);
   }
   tell_ranges (t, found, moved, result);
   tell_others (t, found, result);

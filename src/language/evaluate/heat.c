@@ -39,6 +39,9 @@ split_stated (struct evaluation *ev, const struct composition *gas, bool net,
   for (size_t i = 0; i < gas->count; i++) {
     const struct species *species = gas->species[i];
     double H = net ? species->stated_net : species->stated_gross;
+    if (!(gas->fraction[i] > 0)) {
+      continue;
+    }
     if (species->origin != SPECIES_STATED) {
       known[n++] = (struct part) { species, gas->fraction[i] };
       continue;
@@ -52,10 +55,11 @@ split_stated (struct evaluation *ev, const struct composition *gas, bool net,
     burnt->share -= gas->fraction[i];
     burnt->stated += gas->fraction[i] * H;
   }
-  if (n < gas->count) {
+  bool stated = burnt->share < 1;
+  if (stated) {
     burnt->known = n ? composition_make (ev->arena, n, known, ev->fault) : NULL;
   }
-  return n == 0 || burnt->known;
+  return n == 0 || burnt->known != NULL;
 }
 
 static enum calorific_edition
