@@ -52,8 +52,12 @@ struct treatment {
   double factor;                         /* what every part was multiplied by; 1: none */
   double added;                          /* to the balance component, of the whole */
   double removed;                        /* taken away, of the whole (mol/mol or kg/kg) */
+  double gas;                            /* the gas taken away, whole, as its tracers have it */
   const char *tracer, *skipped;          /* species keys, parted by commas; null: none.  Skipped:
                                             parts of the removed gas not in the list */
+  const char *consumed;                  /* the key of what is there in less than the gas brings;
+                                            null: none is */
+  double brings, holds;                  /* of it, of the whole */
 };
 
 /* All parts scaled to a total of 1.  */
@@ -68,13 +72,16 @@ const struct analysis *analysis_normalised_into (struct arena *, const struct an
 const struct analysis *analysis_without (struct arena *, const struct analysis *,
                                          const struct species *, struct treatment *,
                                          struct fault *) MUST_CHECK;
-/* Takes GAS (air) out: N tracers together set how much and vanish, its other parts go with it;
-   parts of GAS that the analysis does not hold are skipped and named.  Kinds no-such-part (no
-   tracer in it), negative-part (less of a part than goes with the tracer).                     */
+/* What is to be taken out: GAS (air), of which N tracers together set how much.  CONSUMED (oxygen)
+   may have been used up: all of it goes even where there is less than the gas brings; or null.  */
+struct removal { const struct composition *gas; size_t n; const struct species *const *tracers;
+                 const struct species *consumed; };
+/* The tracers vanish, the other parts of the gas go with them; those that the analysis does not
+   hold are skipped and named.  Kinds no-such-part (no tracer in it), negative-part (less of a
+   part than goes with the tracer).                                                              */
 const struct analysis *analysis_without_gas (struct arena *, const struct analysis *,
-                                             const struct composition *gas, size_t n,
-                                             const struct species *const tracers[],
-                                             struct treatment *, struct fault *) MUST_CHECK;
+                                             const struct removal *, struct treatment *,
+                                             struct fault *) MUST_CHECK;
 /* Water away, the rest scaled to a total of 1 if the analysis was closed (its total within
    ANALYSIS_CLOSED of 1; a caller with another tolerance normalises first), else not.  A gas that
    has none keeps its figures.  The result is declared dry.  Kind only-water if nothing is left. */

@@ -175,45 +175,77 @@ keys_joined (struct arena *arena, size_t n, const struct species *const list[])
 }
 
 static const char *
-skipped_keys (struct arena *arena, const struct analysis *a, const struct composition *gas,
-              size_t n, const struct species *const tracers[])
+skipped_keys (struct arena *arena, const struct analysis *a, const struct removal *r)
 {
+  const struct composition *gas = r->gas;
   const struct species **skipped = ARENA_ARRAY (arena, gas->count, const struct species *);
   size_t count = 0;
   for (size_t i = 0; i < gas->count; i++)
-    if (gas->fraction[i] > 0 && !is_among (gas->species[i], n, tracers)
+    if (gas->fraction[i] > 0 && !is_among (gas->species[i], r->n, r->tracers)
+        && gas->species[i] != r->consumed
         && parts_find (a->count, a->parts, gas->species[i]) == a->count)
       skipped[count++] = gas->species[i];
   return keys_joined (arena, count, skipped);
 }
 
+/* MOLES of the whole gas, of the whole of the analysis.  */
+static double
+gas_of_whole (const struct analysis *a, const struct composition *gas, double moles)
+{
+  if (a->whole == WHOLE_MASS)
+    return moles * gas->molar_mass;
+  return a->whole == WHOLE_NONE ? moles / analysis_sum (a) : moles;
+}
+
+/* Is there less of what may have been used up than MOLES of the gas bring?  Says so.  */
+static void
+find_consumed (const struct analysis *a, const struct removal *r, double moles,
+               struct treatment *treatment)
+{
+  if (r->consumed == NULL)
+    return;
+  size_t at = parts_find (a->count, a->parts, r->consumed);
+  double holds = at < a->count ? a->parts[at].amount : 0;
+  double brings = moles * composition_fraction (r->gas, r->consumed);
+  if (!(holds < brings * (1 - 1e-12)))
+    return;
+  treatment->consumed = r->consumed->key;
+  treatment->brings = of_whole (a, r->consumed, brings);
+  treatment->holds = of_whole (a, r->consumed, holds);
+}
+
 const struct analysis *
-analysis_without_gas (struct arena *arena, const struct analysis *a, const struct composition *gas,
-                      size_t n, const struct species *const tracers[],
+analysis_without_gas (struct arena *arena, const struct analysis *a, const struct removal *r,
                       struct treatment *treatment, struct fault *fault)
 {
   double moles = 0;
   struct sum removed = { 0, 0 };
-  if (!tracer_moles (a, gas, n, tracers, &moles, fault))
+  struct treatment did = { .factor = 1 };
+  if (!tracer_moles (a, r->gas, r->n, r->tracers, &moles, fault))
     return NULL;
+  find_consumed (a, r, moles, &did);
   struct gathering g = gathering_start (arena, a->count);
   for (size_t i = 0; i < a->count; i++) {
     double left = 0;
-    if (!is_among (a->parts[i].species, n, tracers)
-        && !part_left (&a->parts[i], gas, moles, &left, fault))
+    const struct species *species = a->parts[i].species;
+    bool goes = is_among (species, r->n, r->tracers)
+                || (did.consumed != NULL && species == r->consumed);
+    if (!goes && !part_left (&a->parts[i], r->gas, moles, &left, fault))
       return NULL;
-    bool touched = composition_fraction (gas, a->parts[i].species) > 0;
+    bool touched = composition_fraction (r->gas, species) > 0;
     if (left > 0 || !touched)
-      g.parts[g.count++] = (struct part) { a->parts[i].species, left };
+      g.parts[g.count++] = (struct part) { species, left };
     if (touched && a->parts[i].amount > 0)
-      sum_add (&removed, of_whole (a, a->parts[i].species, a->parts[i].amount - left));
+      sum_add (&removed, of_whole (a, species, a->parts[i].amount - left));
   }
   const struct analysis *made = gathering_analysis (arena, &g, a->whole, a->dry);
-  *treatment = (struct treatment) {
-    .total_before = analysis_total (a), .total_after = analysis_total (made), .factor = 1,
-    .removed = sum_total (&removed), .tracer = keys_joined (arena, n, tracers),
-    .skipped = skipped_keys (arena, a, gas, n, tracers)
-  };
+  did.total_before = analysis_total (a);
+  did.total_after = analysis_total (made);
+  did.removed = sum_total (&removed);
+  did.gas = gas_of_whole (a, r->gas, moles);
+  did.tracer = keys_joined (arena, r->n, r->tracers);
+  did.skipped = skipped_keys (arena, a, r);
+  *treatment = did;
   return made;
 }
 

@@ -46,6 +46,8 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/evaluate/evaluate_property.h \
   %D%/evaluate/evaluate_sum.c \
   %D%/evaluate/evaluate_thermal.c \
+  %D%/evaluate/evaluate_treat.c \
+  %D%/evaluate/evaluate_treat.h \
   %D%/evaluate/evaluation.h \
   %D%/evaluate/flow.c \
   %D%/evaluate/flow.h \

@@ -3,8 +3,10 @@
 
 #include <math.h>
 #include <string.h>
+#include "gas/air.h"
 #include "gas/analysis.h"
 #include "gas/composition.h"
+#include "gas/gathering.h"
 #include "gas/species.h"
 #include "language/evaluate/wording.h"
 #include "property/calorific.h"
@@ -53,20 +55,46 @@ typed_amount (struct session *session, struct arena *arena, const struct node *p
                        a->unit_text ? " " : "", a->unit_text ? a->unit_text : "", spread);
 }
 
+/* Does the name of a part stand for several: a gas of the user's, air, a peak not resolved?  Is
+   the species among them?                                                                       */
+static bool
+is_within (struct session *session, const struct node *part, const struct species *species)
+{
+  size_t n = strlen (part->text);
+  struct definition *d = name_find (session, part->text, n);
+  struct part peak[AIR_PEAK_PARTS];
+  if (d) {
+    return d->kind == NAME_GAS && d->fresh && d->value.gas->closed
+           && composition_fraction (d->value.gas->closed, species) > 0;
+  }
+  if (air_is_name (part->text, n)) {
+    return composition_fraction (session->air, species) > 0;
+  }
+  size_t count = air_peak (session->vocabulary.species, part->text, n, peak);
+  return parts_find (count, peak, species) < count;
+}
+
+/* What was typed for a species: "58.2", or "in air 40" for one that came with others.  */
 static const char *
 stated_as (struct session *session, struct arena *arena, const struct node *list,
            const struct species *species)
 {
+  const char *typed = "";
   for (const struct node *part = list ? list->items : NULL; part; part = part->next) {
     const struct species *found = NULL;
     const char *candidates;
-    (void) species_find (session->vocabulary.species, part->text, strlen (part->text), &found,
-                         &candidates);
-    if (found == species) {
-      return typed_amount (session, arena, part);
+    bool own = name_find (session, part->text, strlen (part->text)) == NULL
+               && species_find (session->vocabulary.species, part->text, strlen (part->text),
+                                &found, &candidates) != SPECIES_NONE && found == species;
+    if (!own && !is_within (session, part, species)) {
+      continue;
     }
+    const char *amount = typed_amount (session, arena, part);
+    typed = arena_format (arena, "%s%s%s%s%s", typed, *typed ? ", " : "",
+                          own ? "" : "in ", own ? "" : part->text,
+                          own ? amount : arena_format (arena, " %s", amount));
   }
-  return "";
+  return typed;
 }
 
 static const char *
@@ -147,26 +175,79 @@ card_add_limits (struct result *result, struct card *card, const struct composit
   }
 }
 
-/* All composition bases side by side.  */
+/* Before treatments, by the basis: shares that keep the total that was stated.  */
+struct raw { const struct analysis *analysis; double total, moles, mass, Vm; };
+
+static struct raw
+raw_of (const struct analysis *a, double Vm)
+{
+  struct raw raw = { a, a ? analysis_total (a) : 1, 0, 0, Vm };
+  for (size_t i = 0; a && i < a->count; i++) {
+    raw.moles += a->parts[i].amount;
+    raw.mass += a->parts[i].amount * a->parts[i].species->molar_mass;
+  }
+  return raw;
+}
+
+/* mol%, mass% and g/Nm3 of a species before the treatments.  */
+static void
+raw_cells (const struct raw *raw, const struct species *species, struct cell *cells)
+{
+  size_t at = parts_find (raw->analysis->count, raw->analysis->parts, species);
+  double moles = at < raw->analysis->count ? raw->total * raw->analysis->parts[at].amount : 0;
+  number_cell (&cells[1], 100 * moles / raw->moles);
+  number_cell (&cells[3], 100 * moles * species->molar_mass / raw->mass);
+  number_cell (&cells[5], 1000 * moles * species->molar_mass / raw->moles / raw->Vm);
+}
+
+/* One part of a closed gas, with the raw figures beside those of now where there are any.  */
+static void
+part_row (struct session *session, const struct gas_value *gas, const struct raw *raw,
+          const struct species *species, struct result *result, struct card *card)
+{
+  const struct composition *c = gas->closed;
+  size_t step = raw->analysis ? 2 : 1;
+  struct cell *cells = card_add_row (result, card, species->key);
+  double x = composition_fraction (c, species), mass = x * species->molar_mass;
+  number_cell (&cells[0], 100 * x);
+  number_cell (&cells[step], 100 * mass / c->molar_mass);
+  number_cell (&cells[2 * step], 1000 * mass / raw->Vm);
+  if (raw->analysis) {
+    raw_cells (raw, species, cells);
+  }
+  if (gas->list) {
+    cells[3 * step].text = stated_as (session, result->arena, gas->list, species);
+  }
+}
+
+/* All composition bases side by side; of a treated gas what it was as well, and what is gone.  */
 static void
 closed_card (struct session *session, const struct gas_value *gas, const char *name,
              struct result *result)
 {
-  static const char *const headings[] = { "mol%", "mass%", "g/Nm3", "stated as" };
+  static const char *const plain[] = { "mol%", "mass%", "g/Nm3", "stated as" };
+  static const char *const treated[] = { "mol%", "raw mol%", "mass%", "raw mass%", "g/Nm3",
+                                         "raw g/Nm3", "stated as" };
   const struct composition *c = gas->closed;
   struct conditions normal = session->settings.family[FAMILY_NORMAL].at;
-  double Vm = ideal_volume (1, normal);
+  struct raw raw = raw_of (gas->raw, ideal_volume (1, normal));
   struct card *card = result_card (result, name, kind_text (session, result->arena, c, "gas"),
-                                   gas->list ? 4 : 3, headings);
-  for (size_t i = 0; i < c->count; i++) {
-    struct cell *cells = card_add_row (result, card, c->species[i]->key);
-    double mass = c->fraction[i] * c->species[i]->molar_mass;
-    number_cell (&cells[0], 100 * c->fraction[i]);
-    number_cell (&cells[1], 100 * mass / c->molar_mass);
-    number_cell (&cells[2], 1000 * mass / Vm);
-    if (gas->list) {
-      cells[3].text = stated_as (session, result->arena, gas->list, c->species[i]);
+                                   (raw.analysis ? 6u : 3u) + (gas->list != NULL),
+                                   raw.analysis ? treated : plain);
+  for (size_t i = 0; raw.analysis && i < raw.analysis->count; i++) {
+    part_row (session, gas, &raw, raw.analysis->parts[i].species, result, card);
+  }
+  for (size_t i = 0; i < c->count; i++)
+    if (!raw.analysis
+        || parts_find (raw.analysis->count, raw.analysis->parts, c->species[i])
+             == raw.analysis->count) {
+      part_row (session, gas, &raw, c->species[i], result, card);
     }
+  if (raw.analysis && raw.analysis->whole != WHOLE_NONE) {
+    card_add_line (result, card,
+                   arena_format (result->arena, "raw: as stated, total %s %s",
+                                 figure_text (result->arena, 100 * raw.total),
+                                 raw.analysis->whole == WHOLE_MASS ? "mass%" : "mol%"));
   }
   molar_line (session, result, card, c);
   heat_line (session, result, card, c);

@@ -3,30 +3,28 @@
 
 #include <math.h>
 #include <string.h>
-#include "gas/air.h"
 #include "gas/analysis.h"
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/session_private.h"
+#include "language/evaluate/evaluate_treat.h"
 #include "language/evaluate/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
 
 /* ---- Gases and their totals ---- */
 
-/* A figure that may differ from WHOLE only in a digit that is not usually told.  */
-static const char *
-close_text (struct evaluation *ev, double value, double whole)
+const char *
+gas_share_text (struct evaluation *ev, double value, double whole)
 {
   bool hidden = value != whole && fabs (value / whole - 1) < 1e-5;
   return hidden ? arena_format (ev->arena, "%.9g", value) : figure_text (ev->arena, value);
 }
 
-/* A total on the basis of the whole: "99.37 mol%".  */
-static const char *
-total_text (struct evaluation *ev, const struct analysis *analysis, double total)
+const char *
+gas_total_text (struct evaluation *ev, const struct analysis *analysis, double total)
 {
-  return arena_format (ev->arena, "%s %s", close_text (ev, 100 * total, 100),
+  return arena_format (ev->arena, "%s %s", gas_share_text (ev, 100 * total, 100),
                        analysis->whole == WHOLE_MASS ? "mass%" : "mol%");
 }
 
@@ -48,9 +46,6 @@ gas_analysis (struct evaluation *ev, const struct gas_value *gas)
   return gas->analysis ? gas->analysis : analysis_of_composition (ev->arena, gas->closed);
 }
 
-/* Rounding in the last digits of a sum is no scaling.  */
-#define SCALING_WORTH_A_NOTE 1e-10
-
 struct gas_value *
 gas_of_analysis (struct evaluation *ev, const struct analysis *analysis,
                  const struct gas_value *named)
@@ -70,15 +65,14 @@ gas_of_analysis (struct evaluation *ev, const struct analysis *analysis,
   }
   if (gas->closed && fabs (gas->scaled - 1) > SCALING_WORTH_A_NOTE && ev->result) {
     note (ev, MESSAGE_NOTE_SCALED, named->name ? named->name : "the list",
-          close_text (ev, gas->scaled, 1),
-          total_text (ev, analysis, analysis_total (analysis)));
+          gas_share_text (ev, gas->scaled, 1),
+          gas_total_text (ev, analysis, analysis_total (analysis)));
   }
   return gas;
 }
 
-/* The part that usually takes the difference: nitrogen if it is there, else the largest.  */
-static const char *
-usual_balance (const struct analysis *a)
+const char *
+gas_usual_balance (const struct analysis *a)
 {
   size_t largest = 0;
   for (size_t i = 0; i < a->count; i++) {
@@ -98,164 +92,16 @@ gas_composition (struct evaluation *ev, const struct gas_value *gas, struct plac
   }
   const char *name = gas->name ? gas->name : "the list";
   fault_set_at (ev->fault, MESSAGE_GAS_OPEN, at, name,
-                total_text (ev, gas->analysis, analysis_total (gas->analysis)));
+                gas_total_text (ev, gas->analysis, analysis_total (gas->analysis)));
   const char *shown = gas->name ? gas->name : "(...)";
   if (gas->analysis->count > 0) {
     fault_hint (ev->fault, "%s normalised, %s normalised into %s", shown, shown,
-                usual_balance (gas->analysis));
+                gas_usual_balance (gas->analysis));
   }
   return NULL;
 }
 
 /* ---- Changes ---- */
-
-struct change_of { const struct node *node; const struct gas_value *gas; const char *name; };
-
-static bool
-one_species (struct evaluation *ev, const struct node *name, const struct species **species)
-{
-  struct species_set set;
-  if (!species_named (ev, name, &set)) {
-    return false;
-  }
-  if (set.count != 1) {
-    return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, name->at, "one component is needed here",
-                         NULL);
-  }
-  *species = set.at[0];
-  return true;
-}
-
-static const struct analysis *
-normalised (struct evaluation *ev, const struct change_of *c, const struct analysis *before)
-{
-  const struct species *into = NULL;
-  struct treatment did;
-  if (c->node->b && !one_species (ev, c->node->b, &into)) {
-    return NULL;
-  }
-  const struct analysis *after
-    = into ? analysis_normalised_into (ev->arena, before, into, &did, ev->fault)
-           : analysis_normalised (ev->arena, before, &did, ev->fault);
-  if (!after || !ev->result || fabs (did.total_before - 1) <= SCALING_WORTH_A_NOTE) {
-    return after;
-  }
-  const char *total = total_text (ev, before, did.total_before);
-  if (into) {
-    note (ev, MESSAGE_NOTE_NORMALISED_INTO, c->name, total,
-          arena_format (ev->arena, "%s (%s%s)", into->key, did.added < 0 ? "" : "+",
-                        total_text (ev, before, did.added)));
-  } else {
-    note (ev, MESSAGE_NOTE_NORMALISED, c->name, total, figure_text (ev->arena, did.factor));
-  }
-  return after;
-}
-
-/* What a second tracer would have taken away: the two bracket the truth.  */
-static void
-note_other_tracer (struct evaluation *ev, const struct change_of *c,
-                   const struct analysis *before, const struct composition *air, bool by_oxygen)
-{
-  const struct species *other;
-  const char *candidates;
-  struct treatment did;
-  struct fault unheard;
-  const char *key = by_oxygen ? "N2" : "O2";
-  if (!ev->result
-      || species_find (ev->session->vocabulary.species, key, 2, &other, &candidates)
-           != SPECIES_KEY) {
-    return;
-  }
-  fault_init (&unheard, ev->arena);
-  if (analysis_without_gas (ev->arena, before, air, 1, &other, &did, &unheard)) {
-    note (ev, MESSAGE_NOTE_OTHER_TRACER, c->name, key, total_text (ev, before, did.removed));
-  } else if (unheard.kind == MESSAGE_NEGATIVE_PART) {
-    note (ev, MESSAGE_NOTE_OTHER_TRACER_FAILS, c->name, key, unheard.fact[0]);
-  }
-}
-
-/* The place behind another one.  */
-static struct place
-behind (struct place at)
-{
-  return (struct place) { at.line, at.last + 1, at.last + 1 };
-}
-
-/* `without air [by N2]`: the tracer sets how much, the other parts go with it.  */
-static const struct analysis *
-without_gas (struct evaluation *ev, const struct change_of *c, const struct analysis *before,
-             const struct composition *gas)
-{
-  struct species_set tracers = { { ev->session->oxygen }, 1 };
-  struct treatment did;
-  if (!c->node->c && !(composition_fraction (gas, ev->session->oxygen) > 0)) {
-    fault_set_at (ev->fault, MESSAGE_UNFINISHED, behind (c->node->b->at), NULL, NULL);
-    fault_hint (ev->fault, "say which of its parts sets how much: without %s by %s",
-                c->node->b->text, gas->species[0]->key);
-    return NULL;
-  }
-  if (c->node->c && !species_named (ev, c->node->c, &tracers)) {
-    return NULL;
-  }
-  const struct analysis *after
-    = analysis_without_gas (ev->arena, before, gas, tracers.count, tracers.at, &did, ev->fault);
-  if (!after) {
-    fault_place (ev->fault, c->node->c ? c->node->c->at : c->node->b->at);
-    return NULL;
-  }
-  if (ev->result) {
-    const char *tracer = c->node->c ? c->node->c->text : ev->session->oxygen->key;
-    note (ev, MESSAGE_NOTE_REMOVED_BY, c->name,
-          arena_format (ev->arena, "%s of %s", total_text (ev, before, did.removed),
-                        c->node->b->text), tracer);
-    if (did.skipped && *did.skipped) {
-      note (ev, MESSAGE_NOTE_SKIPPED, did.skipped, NULL, NULL);
-    }
-    note_other_tracer (ev, c, before, gas, strcmp (tracer, "O2") == 0);
-  }
-  return after;
-}
-
-static const struct analysis *
-without (struct evaluation *ev, const struct change_of *c, const struct analysis *before)
-{
-  const struct node *what = c->node->b;
-  size_t n = strlen (what->text);
-  struct definition *d = name_find (ev->session, what->text, n);
-  if (d && d->kind == NAME_GAS) {
-    const struct value *value = definition_value (ev, d, what->at);
-    const struct composition *gas = value ? gas_composition (ev, value->gas, what->at) : NULL;
-    return gas ? without_gas (ev, c, before, gas) : NULL;
-  }
-  if (air_is_name (what->text, n)) {
-    return without_gas (ev, c, before, ev->session->air);
-  }
-  struct species_set set;
-  if (!species_named (ev, what, &set)) {
-    return NULL;
-  }
-  if (c->node->c) {
-    fault_set_at (ev->fault, MESSAGE_KIND_WRONG, c->node->c->at,
-                  "a component is taken away whole, without a tracer", NULL);
-    fault_hint (ev->fault, "%s without %s", c->name, what->text);
-    return NULL;
-  }
-  const struct analysis *after = before;
-  double removed = 0;
-  for (size_t i = 0; i < set.count; i++) {
-    struct treatment did;
-    after = analysis_without (ev->arena, after, set.at[i], &did, ev->fault);
-    if (!after) {
-      fault_place (ev->fault, what->at);
-      return NULL;
-    }
-    removed += did.removed;
-  }
-  if (ev->result) {
-    note (ev, MESSAGE_NOTE_REMOVED, c->name, what->text, total_text (ev, before, removed));
-  }
-  return after;
-}
 
 static bool
 wet_gas (struct evaluation *ev, const struct change_of *c, const struct state *state,
@@ -265,7 +111,11 @@ wet_gas (struct evaluation *ev, const struct change_of *c, const struct state *s
   if (!gas || !state_wets (ev, state, NULL, &gas, c->node->at)) {
     return false;
   }
-  out->gas = gas_of_composition (ev, gas, c->gas->name);
+  struct gas_value *wet = ARENA_NEW (ev->arena, struct gas_value);
+  *wet = (struct gas_value) { .name = c->gas->name, .closed = gas, .scaled = 1,
+                              .list = c->gas->list,
+                              .raw = c->gas->raw ? c->gas->raw : gas_analysis (ev, c->gas) };
+  out->gas = wet;
   return true;
 }
 
@@ -323,20 +173,21 @@ change_analysis (struct evaluation *ev, const struct change_of *c, struct value 
     return false;
   }
   if (c->node->kind == NODE_NORMALISED) {
-    after = normalised (ev, c, before);
+    after = gas_normalised (ev, c, before);
   } else if (c->node->kind == NODE_WITHOUT) {
-    after = without (ev, c, before);
+    after = gas_without (ev, c, before);
   } else {
     after = analysis_dried (ev->arena, before, ev->session->water, &did, ev->fault);
     if (after && ev->result && did.removed > 0) {
-      note (ev, MESSAGE_NOTE_REMOVED, c->name, "H2O", total_text (ev, before, did.removed));
+      note (ev, MESSAGE_NOTE_REMOVED, c->name, "H2O", gas_total_text (ev, before, did.removed));
     }
   }
   if (!after) {
     fault_place (ev->fault, c->node->at);
     return false;
   }
-  struct gas_value named = { .name = c->gas->name, .basis = c->gas->basis, .list = c->gas->list };
+  struct gas_value named = { .name = c->gas->name, .basis = c->gas->basis, .list = c->gas->list,
+                             .raw = c->gas->raw ? c->gas->raw : before };
   out->gas = gas_of_analysis (ev, after, &named);
   return out->gas != NULL;
 }

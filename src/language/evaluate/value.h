@@ -38,6 +38,7 @@ struct gas_value {
   double scaled;                           /* by what closing multiplied every part */
   const struct unit *basis;                /* what the list was typed in; null: mol% */
   const struct node *list;                 /* the list it was typed as, or null */
+  const struct analysis *raw;              /* as stated, before treatments; null: none was made */
 };
 
 /* What stands in front of a quantity: dimension and what the dimension cannot tell.  */

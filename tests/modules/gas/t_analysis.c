@@ -21,6 +21,14 @@ start (void)
 }
 
 static const struct analysis *
+without_gas (const struct analysis *a, const struct composition *gas, size_t n,
+             const struct species *const tracers[])
+{
+  struct removal removal = { gas, n, tracers, NULL };
+  return analysis_without_gas (arena, a, &removal, &treatment, &fault);
+}
+
+static const struct analysis *
 make (size_t n, const struct stated_part parts[])
 {
   return analysis_make (arena, n, parts, false, &at, &fault);
@@ -478,9 +486,10 @@ air_by_oxygen_or_nitrogen (void)
   const struct analysis *raw = make (4, parts);
   NEED (air != NULL && raw != NULL);
   const struct analysis *left
-    = analysis_without_gas (arena, raw, air, 1, oxygen, &treatment, &fault);
+    = without_gas (raw, air, 1, oxygen);
   NEED (left != NULL);
   NEAR (treatment.removed, 0.148, 1e-5);
+  NEAR (treatment.gas, 0.148, 1e-5);
   SAME_TEXT (treatment.tracer, "O2");
   SAME_TEXT (treatment.skipped, NULL);
   NEAR (treatment.total_after, 1 - treatment.removed, 1e-14);
@@ -491,15 +500,29 @@ air_by_oxygen_or_nitrogen (void)
   NEAR (percent (left, N2), 4.58376, 1e-5);
   CHECK (isnan (amount (left, O2)));
   /* All the nitrogen as air would need 4.13523 of oxygen, 1.33395 times what there is.  */
-  CHECK (analysis_without_gas (arena, raw, air, 1, nitrogen, &treatment, &fault) == NULL);
+  CHECK (without_gas (raw, air, 1, nitrogen) == NULL);
   SAME_INT (fault.kind, MESSAGE_NEGATIVE_PART);
   SAME_TEXT (fault.fact[0], "O2");
   SAME_TEXT (fault.fact[1], "1.33395 times what there is of it would go with the tracer; take "
              "another tracer");
+  /* The oxygen may have been used up: all of it goes, and what is missing is told.  */
+  struct removal all = { air, 1, nitrogen, &sample[O2] };
+  fault_init (&fault, arena);
+  left = analysis_without_gas (arena, raw, &all, &treatment, &fault);
+  NEED (left != NULL);
+  NEAR (treatment.gas, 0.197423, 1e-5);
+  SAME_TEXT (treatment.consumed, "O2");
+  NEAR (treatment.brings, 0.0413523, 1e-5);
+  NEAR (treatment.holds, 0.031, 1e-14);
+  left = analysis_normalised (arena, left, &treatment, &fault);
+  NEED (left != NULL);
+  NEAR (percent (left, CH4), 56.8315, 1e-5);
+  NEAR (percent (left, CO2), 43.1685, 1e-5);
+  CHECK (isnan (amount (left, O2)));
   /* Free of air and oxygen.  */
   left = analysis_without (arena, raw, &sample[O2], &treatment, &fault);
   NEED (left != NULL);
-  left = analysis_without_gas (arena, left, air, 1, nitrogen, &treatment, &fault);
+  left = without_gas (left, air, 1, nitrogen);
   NEED (left != NULL);
   SAME_TEXT (treatment.skipped, "O2");
   left = analysis_normalised (arena, left, &treatment, &fault);
@@ -528,20 +551,20 @@ tracers_together (void)
   const struct analysis *raw = make (3, parts);
   NEED (air != NULL && raw != NULL);
   const struct analysis *left
-    = analysis_without_gas (arena, raw, air, 2, inert, &treatment, &fault);
+    = without_gas (raw, air, 2, inert);
   NEED (left != NULL);
   SAME_TEXT (treatment.tracer, "N2, Ar");
   SAME_TEXT (treatment.skipped, "CO2");
   NEAR (amount (left, O2), 0.044 - 0.156 / 0.79018 * 0.20946, 1e-13);
   CHECK (isnan (amount (left, N2)));
-  CHECK (analysis_without_gas (arena, raw, air, 1, oxygen, &treatment, &fault) == NULL);
+  CHECK (without_gas (raw, air, 1, oxygen) == NULL);
   SAME_INT (fault.kind, MESSAGE_NEGATIVE_PART);
   SAME_TEXT (fault.fact[0], "N2");
   fault_init (&fault, arena);
-  CHECK (analysis_without_gas (arena, raw, air, 1, foreign, &treatment, &fault) == NULL);
+  CHECK (without_gas (raw, air, 1, foreign) == NULL);
   SAME_INT (fault.kind, MESSAGE_NO_SUCH_PART);
   fault_init (&fault, arena);
-  CHECK (analysis_without_gas (arena, raw, air, 1, absent, &treatment, &fault) == NULL);
+  CHECK (without_gas (raw, air, 1, absent) == NULL);
   SAME_INT (fault.kind, MESSAGE_NO_SUCH_PART);
   SAME_TEXT (fault.fact[0], "Ar");
 }
@@ -565,7 +588,7 @@ air_in_and_out (void)
     const struct analysis *raw = make (3, parts);
     NEED (raw != NULL);
     const struct analysis *left
-      = analysis_without_gas (arena, raw, air, 1, oxygen, &treatment, &fault);
+      = without_gas (raw, air, 1, oxygen);
     NEED (left != NULL && left->count == 2);
     NEAR (treatment.removed, 0.3, 1e-14);
     NEAR (treatment.total_after, 0.7, 1e-14);
