@@ -3,10 +3,18 @@ noinst_LIBRARIES += %D%/libbalance.a
 %C%_libbalance_a_SOURCES = \
   %D%/absent.c \
   %D%/absent.h \
+  %D%/agree.c \
+  %D%/bend.c \
+  %D%/conflict.c \
+  %D%/conflict.h \
+  %D%/core.c \
+  %D%/core.h \
   %D%/factor.c \
   %D%/factor.h \
   %D%/factor_dense.c \
   %D%/factor_way.h \
+  %D%/fixed.c \
+  %D%/fixed.h \
   %D%/gross.c \
   %D%/gross.h \
   %D%/measured.c \
@@ -15,11 +23,17 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/minimise.h \
   %D%/network.c \
   %D%/network.h \
+  %D%/program.c \
+  %D%/program.h \
   %D%/rank.c \
   %D%/rank.h \
   %D%/reconcile.c \
   %D%/reconcile.h \
   %D%/solution.h \
+  %D%/solve.c \
+  %D%/suggest.c \
+  %D%/suggest.h \
+  %D%/suspect.c \
   %D%/system.c \
   %D%/system.h \
   %D%/tangent.c \

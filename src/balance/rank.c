@@ -146,19 +146,35 @@ matrix_product (struct arena *arena, size_t count, size_t n, size_t width, const
   return out;
 }
 
-/* Rows FROM.. of the system times BASE (columns x width), scaled.  */
-static double *
-rows_times (struct arena *arena, const struct system *system, const struct rows *rows,
-            const double row_scale[], size_t from, size_t width, const double base[])
+double *
+system_project (struct arena *arena, const struct system *system, const struct rows *rows,
+                size_t width, const double base[])
 {
-  double *out = ARENA_ARRAY (arena, (rows->count - from) * width + 1, double);
-  for (size_t i = from; i < rows->count; i++) {
+  double *out = ARENA_ARRAY (arena, rows->count * width + 1, double);
+  for (size_t i = 0; i < rows->count; i++) {
     for (size_t e = rows->start[i]; e < rows->start[i + 1]; e++) {
       size_t j = rows->column[e];
-      double a = rows->coefficient[e] * system->scale[j] * (row_scale ? row_scale[i] : 1);
+      double a = rows->coefficient[e] * system->scale[j];
       for (size_t k = 0; k < width; k++) {
-        out[(i - from) * width + k] += a * base[j * width + k];
+        out[i * width + k] += a * base[j * width + k];
       }
+    }
+  }
+  return out;
+}
+
+/* The facts' rows within the structure's null space, scaled.  */
+static const double *
+reduced (struct arena *arena, const struct system *system, size_t width, const double base[])
+{
+  struct rows facts = system->rows;
+  double *out;
+  facts.start += system->structure;
+  facts.count -= system->structure;
+  out = system_project (arena, system, &facts, width, base);
+  for (size_t i = 0; i < facts.count; i++) {
+    for (size_t k = 0; k < width; k++) {
+      out[i * width + k] *= system->row_scale[system->structure + i];
     }
   }
   return out;
@@ -214,8 +230,7 @@ system_reduce (struct arena *arena, struct system *system)
   double *b = ARENA_ARRAY (arena, facts + 1, double), *w = ARENA_ARRAY (arena, width + 1, double);
   double *v, *left;
   struct space space;
-  system->reduced = rows_times (arena, system, &system->rows, system->row_scale,
-                                system->structure, width, base);
+  system->reduced = reduced (arena, system, width, base);
   space = space_make (arena, facts, width, system->reduced);
   for (size_t i = 0; i < facts; i++) {
     b[i] = system->rows.right[system->structure + i] * system->row_scale[system->structure + i];
@@ -246,7 +261,7 @@ system_narrow (struct arena *arena, const struct system *system, const double v[
                size_t *freedom)
 {
   struct rows bent = system_bent (arena, system, v);
-  double *h = rows_times (arena, system, &bent, NULL, 0, system->freedom, system->null);
+  double *h = system_project (arena, system, &bent, system->freedom, system->null);
   struct space space = space_make (arena, bent.count, system->freedom, h);
   *freedom = system->freedom - space.rank;
   return narrowed (arena, system->columns, system->freedom, system->null, &space);

@@ -35,6 +35,9 @@ void system_reduce (struct arena *, struct system *);
    k] as in the system.  */
 const double *system_narrow (struct arena *, const struct system *, const double v[],
                              size_t *freedom);
+/* ROWS times scale times BASE (columns x WIDTH): what a step along each vector of BASE changes.  */
+double *system_project (struct arena *, const struct system *, const struct rows *, size_t width,
+                        const double base[]);
 /* OUT = IN (COUNT x N, row by row) times the matrix M (N x WIDTH).  */
 double *matrix_product (struct arena *, size_t count, size_t n, size_t width, const double in[],
                         const double m[]);

@@ -1,8 +1,9 @@
 /* What a network comes to: solved, short of facts, or with facts that clash.
 
-   The mathematics is described where it is done: rows and rank in system.c, what is fixed in
-   fixed.c, clashes in conflict.c, what would help in suggest.c, reconciliation in reconcile.c,
-   the tests for gross errors in gross.c.                                                        */
+   The mathematics is described where it is done: rows in system.h, rank in rank.h, what agrees in
+   agree.c, splits of unknown share in bend.c, what is fixed in fixed.h, clashes in conflict.h,
+   what would help in suggest.h, reconciliation in reconcile.c, the tests for gross errors in
+   gross.c.                                                                                      */
 #ifndef BALANCE_SOLUTION_H
 #define BALANCE_SOLUTION_H
 
@@ -24,6 +25,10 @@ struct quantity {
   size_t stream, component;      /* of a share: the outlet; of an extent: boundary, reaction */
 };
 
+/* What a person would count.  Variables: for each stream the components that can be in it, and the
+   extents of reactions.  Balances: for each boundary the components that can be in any of its
+   streams.  Relations: facts that tie streams, and for each split (outlets - 1) x (components - 1).
+   Knowns: the other facts, a composition as one fewer than its stream has components.           */
 struct count {
   size_t variables, balances, relations, knowns;
   size_t rank;                   /* independent ones among balances, relations and knowns */
@@ -91,6 +96,8 @@ struct solution {
                                     largest flow */
   double mass_in, mass_out;      /* over all that crosses the network's edge, kg/s; NAN: open */
   size_t negative_count; const size_t *negative;         /* columns below zero */
+  /* Other solutions that splits of unknown share allow beside `value`, each by column.  */
+  size_t other_count; const double *const *other;
 
   const struct range *range;     /* by column, only when something is open; else null */
   const struct range *total_range;                       /* by stream, likewise */

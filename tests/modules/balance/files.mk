@@ -4,6 +4,13 @@
 #   %C%_t_NAME_SOURCES = %D%/t_NAME.c
 #   %C%_t_NAME_LDADD = $(with_balance)
 
+suites += %D%/t_conflict
+%C%_t_conflict_SOURCES = \
+  %D%/plant.c \
+  %D%/plant.h \
+  %D%/t_conflict.c
+%C%_t_conflict_LDADD = $(with_balance)
+
 suites += %D%/t_gross
 %C%_t_gross_SOURCES = \
   %D%/metered.c \
@@ -28,6 +35,13 @@ suites += %D%/t_reconcile
   %D%/metered.h \
   %D%/t_reconcile.c
 %C%_t_reconcile_LDADD = $(with_balance)
+
+suites += %D%/t_solve
+%C%_t_solve_SOURCES = \
+  %D%/plant.c \
+  %D%/plant.h \
+  %D%/t_solve.c
+%C%_t_solve_LDADD = $(with_balance)
 
 suites += %D%/t_system
 %C%_t_system_SOURCES = \

@@ -1,0 +1,187 @@
+#include "config.h"
+#include "balance/core.h"
+
+#include <math.h>
+#include <string.h>
+#include "balance/program.h"
+#include "balance/rank.h"
+#include "support/arena.h"
+#include "support/fault.h"
+
+enum { MOST_STEPS = 100, MOST_HALVES = 40 };
+
+/* Done when the rows are out by less than this part of the largest flow.  */
+static const double converged = 1e-12;
+/* A step goes so far towards where a flow would end, no further.  */
+static const double short_of_edge = 0.9;
+/* A split outlet with less than this part of its inlet is at the edge, where any composition
+   fits.                                                                                         */
+static const double at_edge = 1e-7;
+/* Solutions closer than this, relative to the largest flow, are one.  */
+static const double same_root = 1e-6;
+
+static double
+largest (size_t n, const double v[])
+{
+  double most = 0;
+  for (size_t j = 0; j < n; j++) {
+    most = fmax (most, fabs (v[j]));
+  }
+  return most;
+}
+
+/* How far along STEP the totals of all split streams stay above nothing; at most 1.  */
+static double
+longest (const struct core *core, const double v[], const double step[])
+{
+  const struct system *system = core->system;
+  double most = 1;
+  for (size_t i = 0; i < system->bends; i++) {
+    const struct boundary *b = &core->network->boundary[system->bend[i].boundary];
+    for (size_t o = 0; o <= b->outlet_count; o++) {
+      size_t stream = o == 0 ? b->inlets[0] : b->outlets[o - 1];
+      double total = system_total (system, v, stream), by = system_total (system, step, stream);
+      if (total > 0 && by < 0) {
+        most = fmin (most, short_of_edge * total / -by);
+      }
+    }
+  }
+  return most;
+}
+
+static double
+length (const struct rows *rows)
+{
+  double sum = 0;
+  for (size_t i = 0; i < rows->count; i++) {
+    sum += rows->right[i] * rows->right[i];
+  }
+  return sqrt (sum);
+}
+
+/* STEP = scale * null * z, with z the shortest least-squares solution of the bent rows.  */
+static void
+find_step (struct arena *arena, const struct core *core, const struct rows *bent, double step[])
+{
+  const struct system *system = core->system;
+  size_t width = system->freedom;
+  double *h = system_project (arena, system, bent, width, system->null), *moved;
+  double *z = ARENA_ARRAY (arena, width + 1, double);
+  struct space space = space_make (arena, bent->count, width, h);
+  space_solve (arena, &space, bent->right, z);
+  moved = matrix_product (arena, system->columns, width, 1, system->null, z);
+  for (size_t j = 0; j < system->columns; j++) {
+    step[j] = moved[j] * system->scale[j];
+  }
+}
+
+/* Damped Newton steps within the linear rows; did V get there?  */
+static bool
+newton (const struct core *core, double v[])
+{
+  size_t columns = core->system->columns;
+  bool done = false;
+  for (int steps = 0; steps < MOST_STEPS && !done; steps++) {
+    struct arena *arena = arena_create ();
+    struct rows bent = system_bent (arena, core->system, v);
+    double before = length (&bent), part, *step = ARENA_ARRAY (arena, columns, double);
+    double *next = ARENA_ARRAY (arena, columns, double);
+    int halves = 0;
+    done = before <= converged * largest (columns, v);
+    if (!done) {
+      find_step (arena, core, &bent, step);
+      part = longest (core, v, step);
+      for (;; part /= 2, halves++) {
+        for (size_t j = 0; j < columns; j++) {
+          next[j] = v[j] + part * step[j];
+        }
+        bent = system_bent (arena, core->system, next);
+        if (length (&bent) < before || halves == MOST_HALVES) {
+          break;
+        }
+      }
+      memcpy (v, next, columns * sizeof *v);
+    }
+    arena_destroy (arena);
+    if (halves == MOST_HALVES) {
+      return before <= 1e3 * converged * largest (columns, v);
+    }
+  }
+  return done;
+}
+
+/* Has any split an outlet that is next to nothing?  */
+static bool
+is_at_edge (const struct core *core, const double v[])
+{
+  for (size_t i = 0; i < core->system->bends; i++) {
+    const struct boundary *b = &core->network->boundary[core->system->bend[i].boundary];
+    double in = system_total (core->system, v, b->inlets[0]);
+    for (size_t o = 0; o < b->outlet_count; o++) {
+      if (fabs (system_total (core->system, v, b->outlets[o])) <= at_edge * fabs (in)) {
+        return true;
+      }
+    }
+  }
+  return false;
+}
+
+static bool
+is_known (const struct core *core, size_t count, double *const roots[], const double v[])
+{
+  size_t columns = core->system->columns;
+  double size = largest (columns, v);
+  for (size_t r = 0; r < count; r++) {
+    bool same = true;
+    for (size_t j = 0; j < columns; j++) {
+      same = same && fabs (roots[r][j] - v[j]) <= same_root * size;
+    }
+    if (same) {
+      return true;
+    }
+  }
+  return false;
+}
+
+/* Where Newton's steps end from several starts, those at an edge last; how many.  */
+static size_t
+find_roots (struct core *core, double *roots[])
+{
+  double **start = core_generic (core->arena, core, PROGRAM_SEEDS);
+  size_t inner = 0, edge = 0;
+  double *edges[PROGRAM_SEEDS];
+  for (size_t i = 0; i < PROGRAM_SEEDS; i++) {
+    if (!newton (core, start[i])) {
+      continue;
+    }
+    if (is_at_edge (core, start[i])) {
+      edges[edge++] = start[i];
+    } else if (!is_known (core, inner, roots, start[i])) {
+      roots[inner++] = start[i];
+    }
+  }
+  if (inner == 0 && edge > 0) {
+    roots[inner++] = edges[0];
+  }
+  return inner;
+}
+
+bool
+core_bend (struct core *core, struct fault *fault)
+{
+  double *roots[PROGRAM_SEEDS];
+  size_t count = find_roots (core, roots), independent;
+  struct rows bent;
+  if (count == 0) {
+    return fault_set (fault, MESSAGE_NOT_CONVERGED, "the shares of the splits", NULL);
+  }
+  core->v = roots[0];
+  bent = system_bent (core->arena, core->system, core->v);
+  core->null = system_narrow (core->arena, core->system, core->v, &core->freedom);
+  independent = core->system->freedom - core->freedom;
+  core->surplus += bent.count - independent;
+  core->roots = count - 1;
+  core->root = ARENA_ARRAY (core->arena, count, double *);
+  memcpy (core->root, roots + 1, core->roots * sizeof *core->root);
+  return true;
+}

@@ -1,0 +1,26 @@
+/* Facts that cannot all hold: the smallest set, where it does not close, and what each fact would
+   have to say if it alone were at fault.
+
+   A vector of multipliers that takes the facts, with the balances, to 0 = something names facts
+   that clash; a set is smallest when its multipliers are an elementary vector (Gleeson, Ryan,
+   ORSA J. Comput. 2 (1990) 61; Chinneck, Dravnieks, ORSA J. Comput. 3 (1991) 157).  Balances are
+   not accused: those with multipliers are the envelope that does not close.                     */
+#ifndef BALANCE_CONFLICT_H
+#define BALANCE_CONFLICT_H
+
+#include "balance/core.h"
+#include "balance/solution.h"
+
+struct arena; struct fault;
+
+/* Fills in `conflict` of SOLUTION from facts that do not agree.  False: interrupted.  */
+bool conflict_find (struct arena *keep, const struct core *, struct solution *, struct fault *)
+  MUST_CHECK;
+
+/* What fact F would have to say for the rest (TAKE without it) to hold, of a composition its
+   component C; NAN where the rest does not say.  *PLAUSIBLE: it could be, and no flow would be
+   negative or nothing.                                                                          */
+bool suspect_need (const struct core *, const bool take[], struct suspect *, struct fault *)
+  MUST_CHECK;
+
+#endif

@@ -1,0 +1,246 @@
+#include "config.h"
+#include "balance/core.h"
+
+#include <math.h>
+#include <string.h>
+#include "balance/program.h"
+#include "balance/rank.h"
+#include "balance/solution.h"
+#include "support/arena.h"
+#include "support/fault.h"
+
+/* Fractions of several solutions are one when they differ by less.  */
+static const double same_fraction = 1e-8;
+/* A total below this part of the largest flow is nothing.  */
+static const double no_flow = 1e-10;
+
+bool
+core_goes_on (const struct solve_options *options, struct fault *fault)
+{
+  if (options->interrupted && options->interrupted ()) {
+    return fault_set (fault, MESSAGE_INTERRUPTED, NULL, NULL);
+  }
+  return true;
+}
+
+static double
+largest_flow (const struct core *core, const double v[])
+{
+  double largest = 0;
+  for (size_t j = 0; j < core->network->streams * core->network->components; j++) {
+    largest = fmax (largest, fabs (v[j]));
+  }
+  return largest;
+}
+
+/* Steps of pseudorandom size along the null space, for want of anything better.  */
+static void
+wander (const struct core *core, unsigned long long seed, double v[])
+{
+  double size = largest_flow (core, core->v);
+  memcpy (v, core->v, core->system->columns * sizeof *v);
+  for (size_t k = 0; k < core->freedom; k++) {
+    double step;
+    seed = seed * 6364136223846793005ULL + 1442695040888963407ULL;
+    step = (size > 0 ? size : 1) * ((double) (seed >> 40) / (double) (1 << 24) - 0.5);
+    for (size_t j = 0; j < core->system->columns; j++) {
+      v[j] += step * core->null[j * core->freedom + k] * core->system->scale[j];
+    }
+  }
+}
+
+double **
+core_generic (struct arena *arena, const struct core *core, size_t count)
+{
+  const struct network *network = core->network;
+  double **v = ARENA_ARRAY (arena, count, double *);
+  struct program *program = NULL;
+  for (size_t i = 0; i < count && core->root; i++) {
+    bool open = core->freedom > 0 && core->roots > 0;
+    v[i] = !open || i % (core->roots + 1) == 0 ? core->v : core->root[i % (core->roots + 1) - 1];
+  }
+  if (core->root) {
+    return v;
+  }
+  if (core->freedom > 0) {
+    program = program_make (arena, core->system, core->v, core->freedom, core->null);
+  }
+  for (size_t s = 0; program && program_feasible (program) && s < network->streams; s++) {
+    struct term *terms = ARENA_ARRAY (arena, network->components, struct term);
+    for (size_t c = 0; c < network->components; c++) {
+      struct form one = { 1, &terms[c] };
+      terms[c] = (struct term) { s * network->components + c, 1 };
+      (void) program_range (program, &one);
+    }
+  }
+  for (size_t i = 0; i < count; i++) {
+    v[i] = ARENA_ARRAY (arena, core->system->columns, double);
+    if (!program) {
+      memcpy (v[i], core->v, core->system->columns * sizeof **v);
+    } else if (program_feasible (program)) {
+      program_inside (program, i, v[i]);
+    } else {
+      wander (core, i + 1, v[i]);
+    }
+  }
+  return v;
+}
+
+void
+core_fractions (const struct core *core, size_t count, double *const v[], double fraction[])
+{
+  size_t components = core->network->components;
+  for (size_t j = 0; j < core->network->streams * components; j++) {
+    fraction[j] = (double) NAN;
+    for (size_t i = 0; i < count; i++) {
+      double total = system_total (core->system, v[i], j / components);
+      double flow = core->system->absence.absent[j] ? 0 : v[i][j];
+      double here = fabs (total) > no_flow * largest_flow (core, v[i]) ? flow / total
+                                                                       : (double) NAN;
+      if (i > 0 && !(fabs (here - fraction[j]) <= same_fraction)) {
+        fraction[j] = (double) NAN;
+        break;
+      }
+      fraction[j] = here;
+    }
+  }
+}
+
+/* Is the whole composition of a stream fixed?  */
+static bool
+is_composed (const struct core *core, size_t stream, const double fraction[])
+{
+  for (size_t c = 0; c < core->network->components; c++) {
+    if (isnan (fraction[stream * core->network->components + c])) {
+      return false;
+    }
+  }
+  return true;
+}
+
+/* Is the total of a stream one number, other than nothing?  */
+static bool
+has_total (const struct core *core, size_t stream, double *const v[2])
+{
+  double a = system_total (core->system, v[0], stream);
+  double b = system_total (core->system, v[1], stream);
+  return fabs (a) > no_flow * largest_flow (core, v[0]) && fabs (a - b) <= same_fraction * fabs (a);
+}
+
+/* The share of an outlet follows from two totals.  */
+static bool
+find_share (struct core *core, const struct bend *bend, double *const v[2])
+{
+  const struct boundary *b = &core->network->boundary[bend->boundary];
+  struct split *split = &core->split[bend->boundary];
+  if (!has_total (core, bend->inlet, v) || !has_total (core, bend->outlet, v)) {
+    return false;
+  }
+  if (!split->share) {
+    split->share = ARENA_ARRAY (core->arena, b->outlet_count, double);
+    for (size_t o = 0; o < b->outlet_count; o++) {
+      split->share[o] = (double) NAN;
+    }
+  }
+  for (size_t o = 0; o < b->outlet_count; o++) {
+    if (b->outlets[o] == bend->outlet) {
+      split->share[o] = system_total (core->system, v[0], bend->outlet)
+                        / system_total (core->system, v[0], bend->inlet);
+    }
+  }
+  return true;
+}
+
+static bool
+find_composition (struct core *core, const struct bend *bend, const double fraction[])
+{
+  const struct boundary *b = &core->network->boundary[bend->boundary];
+  struct split *split = &core->split[bend->boundary];
+  for (size_t i = 0; i <= b->outlet_count && split->way != SPLIT_COMPOSED; i++) {
+    size_t stream = i == 0 ? bend->inlet : b->outlets[i - 1];
+    if (is_composed (core, stream, fraction)) {
+      split->way = SPLIT_COMPOSED;
+      split->from = stream;
+      split->x = &fraction[stream * core->network->components];
+    }
+  }
+  return split->way == SPLIT_COMPOSED;
+}
+
+/* Makes splits linear whose composition or share comes out; were there any?  */
+static bool
+straighten (struct core *core)
+{
+  size_t flows = core->network->streams * core->network->components;
+  double *fraction = ARENA_ARRAY (core->arena, flows, double);
+  double **v = core_generic (core->arena, core, 3);
+  bool any = false;
+  core_fractions (core, 3, v, fraction);
+  for (size_t i = 0; i < core->system->bends; i++) {
+    const struct bend *bend = &core->system->bend[i];
+    any = find_composition (core, bend, fraction) || any;
+  }
+  for (size_t i = 0; i < core->system->bends && !any; i++) {
+    any = find_share (core, &core->system->bend[i], v) || any;
+  }
+  return any;
+}
+
+/* What the linear rows come to.  */
+static void
+reduce (struct core *core, const bool take[])
+{
+  core->system = system_make (core->arena, core->network, take, core->split);
+  system_reduce (core->arena, core->system);
+  core->v = ARENA_ARRAY (core->arena, core->system->columns + 1, double);
+  memcpy (core->v, core->system->particular, core->system->columns * sizeof *core->v);
+  core->freedom = core->system->freedom;
+  core->null = core->system->null;
+  core->surplus = core->system->surplus;
+  core_agree (core);
+}
+
+/* The linear rows, with all splits that can be made linear; null: interrupted.  */
+static struct core *
+core_linear (struct arena *arena, const struct network *network, const bool take[],
+             const struct solve_options *options, struct fault *fault)
+{
+  struct core *core = ARENA_NEW (arena, struct core);
+  core->arena = arena;
+  core->network = network;
+  core->options = options;
+  core->split = ARENA_ARRAY (arena, network->boundaries + 1, struct split);
+  for (size_t b = 0; b < network->boundaries; b++) {
+    bool is_split = network->boundary[b].kind == BOUNDARY_SPLIT;
+    core->split[b].way = is_split ? SPLIT_BENT : SPLIT_NONE;
+  }
+  do {
+    if (!core_goes_on (options, fault)) {
+      return NULL;
+    }
+    reduce (core, take);
+  } while (core->agree && core->system->bends > 0 && straighten (core));
+  return core;
+}
+
+struct core *
+core_make (struct arena *arena, const struct network *network, const bool take[],
+           const struct solve_options *options, struct fault *fault)
+{
+  struct core *core = core_linear (arena, network, take, options, fault);
+  if (core && core->agree && core->system->bends > 0 && !core_bend (core, fault)) {
+    return NULL;
+  }
+  return core;
+}
+
+bool
+core_clashes (struct arena *arena, const struct network *network, const bool take[],
+              const struct solve_options *options)
+{
+  struct fault ignored;
+  const struct core *core;
+  fault_init (&ignored, arena);
+  core = core_linear (arena, network, take, options, &ignored);
+  return core && !core->agree;
+}

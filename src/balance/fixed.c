@@ -1,0 +1,339 @@
+#include "config.h"
+#include "balance/fixed.h"
+
+#include <math.h>
+#include <string.h>
+#include "balance/program.h"
+#include "support/arena.h"
+
+/* A form whose change along the null space is less than this part of its norm is fixed.  */
+static const double moves_not = 1e-8;
+/* A range narrower than this part of the largest flow has no width.  */
+static const double no_width = 1e-10;
+/* A flow is negative when it is below this part of the largest.  */
+static const double below_zero = 1e-9;
+
+struct work {
+  struct arena *keep;
+  const struct core *core;
+  const struct network *network;
+  size_t flows, columns;
+  double unit;                   /* the largest flow */
+  double *value, *fraction;
+  bool *fixed, *fixed_total, *fixed_fraction;
+  struct range *range, *total_range;
+  struct program *program;       /* null: nothing is open */
+  bool feasible;
+};
+
+static double
+norm (size_t n, const double x[])
+{
+  double sum = 0;
+  for (size_t i = 0; i < n; i++) {
+    sum += x[i] * x[i];
+  }
+  return sqrt (sum);
+}
+
+/* Adds FACTOR times the row of column J to G, and to the square SIZE of the gradient's norm.  */
+static void
+reach_add (const struct core *core, size_t j, double factor, double g[], double *size)
+{
+  double a = core->system->absence.absent[j] ? 0 : factor * core->system->scale[j];
+  for (size_t k = 0; k < core->freedom; k++) {
+    g[k] += a * core->null[j * core->freedom + k];
+  }
+  *size += a * a;
+}
+
+/* F[outlet] / F[inlet] of a split: (1 at the outlet - phi at the inlet) / F[inlet].  */
+static double
+share_reach (const struct core *core, size_t outlet, const double v[], double g[])
+{
+  const struct network *network = core->network;
+  double size = 0;
+  for (size_t i = 0; i < core->system->bends; i++) {
+    size_t inlet = core->system->bend[i].inlet;
+    double in = system_total (core->system, v, inlet);
+    if (core->system->bend[i].outlet == outlet && fabs (in) > 0) {
+      double phi = system_total (core->system, v, outlet) / in;
+      for (size_t c = 0; c < network->components; c++) {
+        reach_add (core, outlet * network->components + c, 1 / in, g, &size);
+        reach_add (core, inlet * network->components + c, -phi / in, g, &size);
+      }
+    }
+  }
+  return sqrt (size);
+}
+
+double
+quantity_reach (const struct core *core, const struct quantity *quantity, const double v[],
+                double g[])
+{
+  const struct network *network = core->network;
+  size_t components = network->components, first = quantity->stream * components;
+  double size = 0, total = 0;
+  memset (g, 0, core->freedom * sizeof *g);
+  if (quantity->kind == QUANTITY_EXTENT) {
+    reach_add (core, network_extent (network, quantity->stream) + quantity->component, 1, g,
+               &size);
+    return sqrt (size);
+  }
+  if (quantity->kind == QUANTITY_SHARE) {
+    return share_reach (core, quantity->stream, v, g);
+  }
+  if (quantity->kind == QUANTITY_FRACTION) {
+    total = system_total (core->system, v, quantity->stream);
+  }
+  for (size_t c = 0; c < components; c++) {
+    double is = c == quantity->component ? 1 : 0;
+    if (quantity->kind == QUANTITY_FRACTION && fabs (total) > 0) {
+      double x = v[first + quantity->component] / total;
+      reach_add (core, first + c, (is - x) / total, g, &size);
+    } else if (quantity->kind == QUANTITY_TOTAL || is > 0) {
+      reach_add (core, first + c, 1, g, &size);
+    }
+  }
+  return sqrt (size);
+}
+
+static void
+classify_by_algebra (struct work *work)
+{
+  const struct core *core = work->core;
+  double *g = ARENA_ARRAY (core->arena, core->freedom + 1, double);
+  for (size_t j = 0; j < work->columns; j++) {
+    const double *row = &core->null[j * core->freedom];
+    work->fixed[j] = norm (core->freedom, row) <= moves_not;
+    work->value[j] = core->system->absence.absent[j] ? 0 : core->v[j];
+    work->unit = j < work->flows ? fmax (work->unit, fabs (work->value[j])) : work->unit;
+  }
+  for (size_t s = 0; s < work->network->streams; s++) {
+    struct quantity total = { QUANTITY_TOTAL, s, 0 };
+    double size = quantity_reach (core, &total, core->v, g);
+    work->fixed_total[s] = norm (core->freedom, g) <= moves_not * size;
+  }
+}
+
+static bool
+has_width (const struct work *work, const struct range *range)
+{
+  return !(range->greatest - range->least <= no_width * work->unit);
+}
+
+/* Ranges of all that is open; what has none is fixed.  */
+static void
+find_ranges (struct work *work)
+{
+  size_t components = work->network->components;
+  struct term *terms = ARENA_ARRAY (work->core->arena, components, struct term);
+  work->range = ARENA_ARRAY (work->keep, work->columns, struct range);
+  work->total_range = ARENA_ARRAY (work->keep, work->network->streams, struct range);
+  for (size_t j = 0; j < work->columns; j++) {
+    work->range[j] = (struct range) { work->value[j], work->value[j] };
+    if (!work->fixed[j]) {
+      terms[0] = (struct term) { j, 1 };
+      work->range[j] = program_range (work->program, &(struct form) { 1, terms });
+      work->fixed[j] = !has_width (work, &work->range[j]);
+    }
+  }
+  for (size_t s = 0; s < work->network->streams; s++) {
+    double total = system_total (work->core->system, work->value, s);
+    work->total_range[s] = (struct range) { total, total };
+    for (size_t c = 0; c < components; c++) {
+      terms[c] = (struct term) { s * components + c, 1 };
+    }
+    if (!work->fixed_total[s]) {
+      work->total_range[s] = program_range (work->program, &(struct form) { components, terms });
+      work->fixed_total[s] = !has_width (work, &work->total_range[s]);
+    }
+  }
+}
+
+/* A value inside the ranges for what is open, that of its range for what is fixed by it.  */
+static void
+choose_values (struct work *work)
+{
+  double *inside = ARENA_ARRAY (work->core->arena, work->columns, double);
+  if (!work->feasible) {
+    program_point (work->program, false, work->value);
+    return;
+  }
+  program_inside (work->program, 0, inside);
+  for (size_t j = 0; j < work->columns; j++) {
+    bool by_range = work->fixed[j] && work->range[j].greatest > work->range[j].least;
+    work->value[j] = by_range ? 0.5 * (work->range[j].least + work->range[j].greatest)
+                              : inside[j];
+  }
+}
+
+static void
+find_fractions (struct work *work)
+{
+  enum { POINTS = 3 };
+  const struct core *core = work->core;
+  double **v = ARENA_ARRAY (core->arena, POINTS, double *);
+  if (!work->program || core->root || !work->feasible) {
+    v = core_generic (core->arena, core, POINTS);
+  } else {
+    for (size_t i = 0; i < POINTS; i++) {
+      v[i] = ARENA_ARRAY (core->arena, work->columns, double);
+      program_inside (work->program, i, v[i]);
+    }
+  }
+  core_fractions (core, POINTS, v, work->fraction);
+  for (size_t j = 0; j < work->flows; j++) {
+    work->fixed_fraction[j] = !isnan (work->fraction[j]);
+  }
+}
+
+/* Do all right sides say nothing?  */
+static bool
+is_homogeneous (const struct system *system)
+{
+  for (size_t i = 0; i < system->rows.count; i++) {
+    if (fabs (system->rows.right[i]) > 0) {
+      return false;
+    }
+  }
+  return true;
+}
+
+static const size_t *
+find_negative (struct work *work, size_t *count)
+{
+  size_t *negative = ARENA_ARRAY (work->keep, work->flows + 1, size_t);
+  bool all = work->program && !work->feasible;
+  for (size_t j = 0; j < work->flows; j++) {
+    if ((work->fixed[j] || all) && work->value[j] < -below_zero * work->unit) {
+      negative[(*count)++] = j;
+    }
+  }
+  return negative;
+}
+
+/* Row by row echelon form of the null space's transpose, so that each vector moves few columns.
+   Complete pivots; rows are directions.                                                         */
+static double *
+echelon (struct arena *arena, const struct work *work)
+{
+  size_t d = work->core->freedom, n = work->columns;
+  double *a = ARENA_ARRAY (arena, d * n + 1, double);
+  bool *used = ARENA_ARRAY (arena, n + 1, bool);
+  for (size_t j = 0; j < n; j++) {
+    for (size_t k = 0; k < d && !work->fixed[j]; k++) {
+      a[k * n + j] = work->core->null[j * d + k];
+    }
+  }
+  for (size_t k = 0; k < d; k++) {
+    size_t best = 0, row = k;
+    double most = 0;
+    for (size_t i = k; i < d; i++) {
+      for (size_t j = 0; j < n; j++) {
+        if (!used[j] && fabs (a[i * n + j]) > most) {
+          most = fabs (a[i * n + j]);
+          best = j;
+          row = i;
+        }
+      }
+    }
+    if (!(most > moves_not)) {
+      break;
+    }
+    used[best] = true;
+    for (size_t j = 0; j < n; j++) {
+      double swap = a[row * n + j];
+      a[row * n + j] = a[k * n + j];
+      a[k * n + j] = swap;
+    }
+    for (size_t i = 0; i < d; i++) {
+      double factor = i == k ? 0 : a[i * n + best] / a[k * n + best];
+      for (size_t j = 0; j < n && fabs (factor) > 0; j++) {
+        a[i * n + j] -= factor * a[k * n + j];
+      }
+    }
+  }
+  return a;
+}
+
+static size_t
+leader (const size_t parent[], size_t j)
+{
+  while (parent[j] != j) {
+    j = parent[j];
+  }
+  return j;
+}
+
+/* Columns that one direction moves are one group; groups are numbered from 1.  */
+static const size_t *
+find_groups (struct work *work)
+{
+  struct arena *arena = work->core->arena;
+  size_t d = work->core->freedom, n = work->columns, groups = 0;
+  size_t *group = ARENA_ARRAY (work->keep, n + 1, size_t), *parent, *number;
+  double *a = echelon (arena, work);
+  parent = ARENA_ARRAY (arena, n + 1, size_t);
+  number = ARENA_ARRAY (arena, n + 1, size_t);
+  for (size_t j = 0; j < n; j++) {
+    parent[j] = j;
+  }
+  for (size_t k = 0; k < d; k++) {
+    size_t first = NOWHERE;
+    for (size_t j = 0; j < n; j++) {
+      if (fabs (a[k * n + j]) > moves_not && first == NOWHERE) {
+        first = leader (parent, j);
+      } else if (fabs (a[k * n + j]) > moves_not) {
+        parent[leader (parent, j)] = first;
+      }
+    }
+  }
+  for (size_t j = 0; j < n; j++) {
+    size_t lead = leader (parent, j);
+    if (!work->fixed[j]) {
+      number[lead] = number[lead] > 0 ? number[lead] : ++groups;
+      group[j] = number[lead];
+    }
+  }
+  return group;
+}
+
+void
+fixed_classify (struct arena *keep, const struct core *core, struct solution *solution)
+{
+  const struct network *network = core->network;
+  size_t flows = network->streams * network->components, columns = core->system->columns;
+  struct work work = {
+    .keep = keep, .core = core, .network = network, .flows = flows, .columns = columns,
+    .value = ARENA_ARRAY (keep, columns + 1, double),
+    .fraction = ARENA_ARRAY (keep, flows + 1, double),
+    .fixed = ARENA_ARRAY (keep, columns + 1, bool),
+    .fixed_total = ARENA_ARRAY (keep, network->streams + 1, bool),
+    .fixed_fraction = ARENA_ARRAY (keep, flows + 1, bool)
+  };
+  classify_by_algebra (&work);
+  if (core->freedom > 0) {
+    work.program = program_make (core->arena, core->system, core->v, core->system->freedom,
+                                 core->system->null);
+    work.feasible = program_feasible (work.program);
+    if (work.feasible) {
+      find_ranges (&work);
+    }
+    if (!core->root) {
+      choose_values (&work);
+    }
+  }
+  find_fractions (&work);
+  solution->value = work.value;
+  solution->fixed = work.fixed;
+  solution->fixed_total = work.fixed_total;
+  solution->fixed_fraction = work.fixed_fraction;
+  solution->fraction = work.fraction;
+  solution->range = work.range;
+  solution->total_range = work.total_range;
+  solution->scale_open = core->freedom == 1 && is_homogeneous (core->system);
+  solution->group = find_groups (&work);
+  solution->negative_count = 0;
+  solution->negative = find_negative (&work, &solution->negative_count);
+}

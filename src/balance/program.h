@@ -1,0 +1,35 @@
+/* The solutions without negative flows, and the least and greatest value of linear forms on them.
+
+   All solutions are v = v0 + scale * (null z).  Those whose component flows are at least zero are
+   walked over with a dictionary: as many flows as there are directions stand for the directions,
+   the others are written in them (Dantzig's simplex method; Chvatal, Linear Programming, 1983,
+   chapters 2, 3 and 8).  Extents have no sign.                                                  */
+#ifndef BALANCE_PROGRAM_H
+#define BALANCE_PROGRAM_H
+
+#include <stdbool.h>
+#include <stddef.h>
+#include "balance/network.h"
+#include "balance/solution.h"
+#include "balance/system.h"
+
+struct arena; struct program;
+
+/* From a solution V and the null space.  It lives in the arena.  */
+struct program *program_make (struct arena *, const struct system *, const double v[],
+                              size_t freedom, const double null[]);
+/* Is there any solution without a negative flow?  If not, `program_point` is the one whose most
+   negative flow is least so.                                                                    */
+bool program_feasible (const struct program *);
+/* The least and greatest value of a form (infinite where nothing bounds it).  Only if feasible.  */
+struct range program_range (struct program *, const struct form *);
+/* Where the last search ended, by column of the network; if RAY, gone on along the direction that
+   nothing bounds.                                                                               */
+void program_point (const struct program *, bool ray, double v[]);
+
+/* A solution inside the ranges of all forms asked about so far: the mean of where their searches
+   ended, equal weights for seed 0, others for others.                                           */
+enum { PROGRAM_SEEDS = 8 };
+void program_inside (const struct program *, size_t seed, double v[]);
+
+#endif

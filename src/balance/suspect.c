@@ -1,0 +1,164 @@
+#include "config.h"
+#include "balance/conflict.h"
+
+#include <math.h>
+#include <string.h>
+#include "balance/program.h"
+#include "support/arena.h"
+
+enum { POINTS = 3 };
+
+/* Values at generic solutions that differ by less are one, relative.  */
+static const double same = 1e-7;
+/* A flow below this part of the largest is nothing, and negative below minus that.  */
+static const double nothing = 1e-9;
+
+struct doubt {
+  struct arena *arena;
+  struct network network;        /* without the fact, or with what is left of it */
+  struct fact *facts;
+  bool *take;
+};
+
+/* Of a composition all but component C stays as it was: the others keep their proportions.  */
+static void
+keep_proportions (struct doubt *doubt, const struct fact *fact, size_t c)
+{
+  size_t components = doubt->network.components, first = fact->stream * components, largest = c;
+  struct term *others = ARENA_ARRAY (doubt->arena, components, struct term);
+  size_t count = 0;
+  for (size_t k = 0; k < components; k++) {
+    if (k != c) {
+      others[count++] = (struct term) { first + k, 1 };
+      largest = largest == c || fact->fractions[k] > fact->fractions[largest] ? k : largest;
+    }
+  }
+  for (size_t i = 0; i < count; i++) {
+    size_t k = others[i].column - first;
+    if (k != largest && fact->fractions[c] < 1) {
+      struct fact *ratio = &doubt->facts[doubt->network.facts];
+      *ratio = (struct fact) { .kind = FACT_RATIO, .left = { 1, &others[i] },
+                               .right = { count, others }, .u = (double) NAN, .weight = 1,
+                               .value = fact->fractions[k] / (1 - fact->fractions[c]) };
+      doubt->take[doubt->network.facts++] = true;
+    }
+  }
+}
+
+static struct doubt
+doubt_make (const struct core *core, const bool take[], const struct suspect *suspect)
+{
+  const struct network *network = core->network;
+  size_t most = network->facts + network->components;
+  const struct fact *fact = &network->fact[suspect->fact];
+  struct doubt doubt = { core->arena, *network, ARENA_ARRAY (core->arena, most, struct fact),
+                         ARENA_ARRAY (core->arena, most, bool) };
+  memcpy (doubt.facts, network->fact, network->facts * sizeof *doubt.facts);
+  memcpy (doubt.take, take, network->facts * sizeof *doubt.take);
+  doubt.take[suspect->fact] = false;
+  doubt.network.fact = doubt.facts;
+  if (fact->kind == FACT_COMPOSITION) {
+    keep_proportions (&doubt, fact, suspect->component);
+  }
+  return doubt;
+}
+
+/* What the fact says at V.  */
+static double
+say (const struct core *core, const struct suspect *suspect, const double v[])
+{
+  const struct fact *fact = &core->network->fact[suspect->fact];
+  double part = 0, whole = 1;
+  switch (fact->kind) {
+  case FACT_FORM:
+    return form_value (&fact->left, v);
+  case FACT_RATIO:
+    part = form_value (&fact->left, v);
+    whole = form_value (&fact->right, v);
+    break;
+  case FACT_COMPOSITION:
+    part = v[fact->stream * core->network->components + suspect->component];
+    whole = system_total (core->system, v, fact->stream);
+    break;
+  case FACT_SHARE:
+    part = system_total (core->system, v, fact->stream);
+    whole = system_total (core->system, v, fact->of);
+    break;
+  }
+  return fabs (whole) > 0 ? part / whole : (double) NAN;
+}
+
+/* Is the ratio one of a part to its whole, within one stream?  */
+static bool
+is_part (const struct core *core, const struct fact *fact)
+{
+  size_t components = core->network->components;
+  if (fact->kind == FACT_COMPOSITION || fact->kind == FACT_SHARE) {
+    return true;
+  }
+  for (size_t i = 0; i < fact->left.count && fact->kind == FACT_RATIO; i++) {
+    bool found = false;
+    for (size_t j = 0; j < fact->right.count; j++) {
+      found = found || fact->right.terms[j].column == fact->left.terms[i].column;
+    }
+    if (!found || fact->left.terms[i].column / components
+                  != fact->left.terms[0].column / components) {
+      return false;
+    }
+  }
+  return fact->kind == FACT_RATIO;
+}
+
+/* Does anything flow in every stream, and nothing backwards?  V lies inside the solutions without
+   negative flows, if there are any.                                                             */
+static bool
+flows_forward (const struct core *core, const double v[])
+{
+  size_t components = core->network->components;
+  double largest = 0;
+  for (size_t j = 0; j < core->network->streams * components; j++) {
+    largest = fmax (largest, fabs (v[j]));
+  }
+  for (size_t s = 0; s < core->network->streams; s++) {
+    for (size_t c = 0; c < components; c++) {
+      if (v[s * components + c] < -nothing * largest) {
+        return false;
+      }
+    }
+    if (system_parts (core->system, s) > 0
+        && system_total (core->system, v, s) <= nothing * largest) {
+      return false;
+    }
+  }
+  return true;
+}
+
+bool
+suspect_need (const struct core *core, const bool take[], struct suspect *suspect,
+              struct fault *fault)
+{
+  const struct fact *fact = &core->network->fact[suspect->fact];
+  struct doubt doubt = doubt_make (core, take, suspect);
+  const struct core *rest = core_make (core->arena, &doubt.network, doubt.take, core->options,
+                                       fault);
+  double **v;
+  if (!rest) {
+    return false;
+  }
+  suspect->needed = (double) NAN;
+  suspect->plausible = false;
+  if (!rest->agree) {
+    return true;
+  }
+  v = core_generic (core->arena, rest, POINTS);
+  suspect->needed = say (rest, suspect, v[0]);
+  for (size_t i = 1; i < POINTS; i++) {
+    double other = say (rest, suspect, v[i]);
+    if (!(fabs (other - suspect->needed) <= same * fabs (suspect->needed))) {
+      suspect->needed = (double) NAN;
+    }
+  }
+  suspect->plausible = suspect->needed >= 0 && flows_forward (rest, v[0])
+                       && (!is_part (rest, fact) || suspect->needed <= 1);
+  return true;
+}
