@@ -149,6 +149,38 @@ tell_assumption (struct evaluation *ev, const struct statement *s, const struct 
   remark->effect = other.name ? effect : UNSTATED;
 }
 
+/* Where something was below a detection limit: the figures between which each one lies.  */
+static void
+tell_below (struct evaluation *ev, const struct statement *s, const struct figures *figures)
+{
+  struct figures ends[2] = { { NULL, 0, 0 }, { NULL, 0, 0 } };
+  const char *text = "";
+  for (int i = 0; i < 2; i++) {
+    struct evaluation again;
+    struct fault unheard;
+    struct settings settings = *ev->settings;
+    settings.below = i == 0 ? BELOW_ZERO : BELOW_LIMIT;
+    fault_init (&unheard, ev->arena);
+    evaluation_again (&again, ev, &unheard);
+    again.settings = &settings;
+    again.overridden = TOUCH_BELOW;
+    if (!question_again (&again, s, &ends[i]) || ends[i].count != figures->count) {
+      return;
+    }
+  }
+  for (size_t i = 0; i < figures->count; i++) {
+    double zero = ends[0].at[i].value, limit = ends[1].at[i].value;
+    if (fabs (limit - zero) > NO_EFFECT * fabs (figures->at[i].value)) {
+      text = arena_format (ev->arena, "%s%s%s to %s %s", text, *text ? ", " : "",
+                           figure_text (ev->arena, zero), figure_text (ev->arena, limit),
+                           figures->at[i].unit_text);
+    }
+  }
+  if (*text) {
+    result_remark (ev->result, MESSAGE_NOTE_BELOW_RANGE, text, NULL);
+  }
+}
+
 /* ---- The answer ---- */
 
 static struct answer *
@@ -237,6 +269,9 @@ question_answer (struct evaluation *ev, const struct statement *s)
     tell_assumption (ev, s, &figures, &ev->assumptions[i]);
   }
   result_sort_taken (result);
+  if (ev->touched & TOUCH_BELOW) {
+    tell_below (ev, s, &figures);
+  }
   caution_value (ev, s, &value);
   for (size_t i = 0; i < ev->used_count; i++) {
     definition_tell (ev->session, ev->used[i], false, result);

@@ -103,14 +103,26 @@ gas_composition (struct evaluation *ev, const struct gas_value *gas, struct plac
 
 /* ---- Changes ---- */
 
+/* A dry gas that takes water up: a state that wets one leaves that unsaid, the word for it not.  */
+static void
+note_first_water (struct evaluation *ev, const struct composition *before,
+                  const struct composition *after)
+{
+  const struct species *water = ev->session->water;
+  if (!(composition_fraction (before, water) > 0)) {
+    note_water (ev, 0, composition_fraction (after, water));
+  }
+}
+
 static bool
 wet_gas (struct evaluation *ev, const struct change_of *c, const struct state *state,
          struct value *out)
 {
-  const struct composition *gas = gas_composition (ev, c->gas, c->node->a->at);
+  const struct composition *gas = gas_composition (ev, c->gas, c->node->a->at), *before = gas;
   if (!gas || !state_wets (ev, state, NULL, &gas, c->node->at)) {
     return false;
   }
+  note_first_water (ev, before, gas);
   struct gas_value *wet = ARENA_NEW (ev->arena, struct gas_value);
   *wet = (struct gas_value) { .name = c->gas->name, .closed = gas, .scaled = 1,
                               .list = c->gas->list,
@@ -159,6 +171,7 @@ change_stream (struct evaluation *ev, const struct node *node, struct value *v)
   if (!state_wets (ev, &state, &v->stream, &gas, node->at)) {
     return false;
   }
+  note_first_water (ev, v->stream.gas, gas);
   v->stream.moles = dry / (1 - composition_fraction (gas, ev->session->water));
   v->stream.gas = gas;
   return true;

@@ -251,8 +251,10 @@ note_water (struct evaluation *ev, double before, double after)
   if (!ev->result || fabs (after - before) <= 1e-12) {
     return;
   }
-  const char *change = arena_format (ev->arena, "from %s to %s", share_text (ev->arena, before),
-                                     share_text (ev->arena, after));
+  const char *change = share_text (ev->arena, after);
+  if (before > 0) {
+    change = arena_format (ev->arena, "from %s to %s", share_text (ev->arena, before), change);
+  }
   note (ev, after > before ? MESSAGE_NOTE_WATER_ADDED : MESSAGE_NOTE_WATER_REMOVED, change, NULL,
         NULL);
 }
