@@ -1,7 +1,6 @@
 noinst_LIBRARIES += %D%/liblanguage.a
 
 %C%_liblanguage_a_SOURCES = \
-  %D%/block.c \
   %D%/check/candidates.c \
   %D%/check/hold.c \
   %D%/check/hold.h \
@@ -10,8 +9,6 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/check/readings.h \
   %D%/check/search.c \
   %D%/check/search.h \
-  %D%/check/sheet.c \
-  %D%/check/sheet.h \
   %D%/check/trial.c \
   %D%/check/trial.h \
   %D%/commands/card_gas.c \

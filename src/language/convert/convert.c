@@ -270,7 +270,7 @@ counted_as (struct conversion *c, const struct species *species, double *per_mol
                                        species->key, c->counted_as->text), NULL);
   }
   *molar_mass = set.at[0]->molar_mass;
-  if (c->ev->result) {
+  if (c->ev->result && species != set.at[0]) {
     note (c->ev, MESSAGE_NOTE_COUNTED_AS, species->key, c->counted_as->text, NULL);
   }
   return true;
@@ -278,6 +278,8 @@ counted_as (struct conversion *c, const struct species *species, double *per_mol
 
 /* How near to air a measured oxygen may come: beyond, the factor says nothing.  */
 #define NEAREST_TO_AIR 0.98
+/* Short of air by less, an error of 0.1 mol% of oxygen moves the figure by 3 % or more.  */
+#define SENSITIVE_TO_OXYGEN 0.0333
 
 bool
 oxygen_factor (struct conversion *c, double measured, const char *what, double *factor)
@@ -310,6 +312,10 @@ oxygen_factor (struct conversion *c, double measured, const char *what, double *
                         figure_text (ev->arena, *factor), share_text (ev->arena, A)));
     note (ev, *factor < 1 ? MESSAGE_NOTE_OXYGEN_LOWERS : MESSAGE_NOTE_OXYGEN_RAISES, NULL, NULL,
           NULL);
+    if (A - measured < SENSITIVE_TO_OXYGEN) {
+      note (ev, MESSAGE_NOTE_OXYGEN_SENSITIVE, share_text (ev->arena, measured),
+            arena_format (ev->arena, "%.2g %%", 0.1 / (A - measured)), NULL);
+    }
     note (ev, MESSAGE_CAUTION_EMISSION, NULL, NULL, NULL);
   }
   return true;
@@ -369,7 +375,7 @@ conversion_volume (struct conversion *c, const struct composition *gas,
     isnan (c->state.p) ? fallback->p : c->state.p,
     own && isnan (c->state.Z) ? fallback->Z : c->state.Z, (c->words & WORD_IDEAL) != 0
   };
-  if ((isnan (q.T) || isnan (q.p)) && !volume_fill (ev, &q.T, &q.p)) {
+  if (isnan (q.T) || isnan (q.p)) {
     return no_volume_state (c);
   }
   struct actual a = { .T = q.T, .p = q.p, .customary = customary_unit (c->unit_text) };

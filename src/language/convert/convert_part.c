@@ -77,6 +77,27 @@ with_oxygen (struct conversion *c, const char *basis)
   return basis ? arena_format (c->ev->arena, "%s, %s", basis, oxygen) : oxygen;
 }
 
+/* Several components, each counted as what is asked: NO+NO2 as NO2.  */
+static bool
+counted_group (struct conversion *c, double *mass_per_mole, double *moles_per_mole)
+{
+  const struct value *v = c->value;
+  const struct composition *gas = v->of_stream ? v->stream.gas : v->gas->closed;
+  double all = 0, moles = 0, mass = 0;
+  for (size_t i = 0; i < v->species.count; i++) {
+    double n = composition_fraction (gas, v->species.at[i]), per, M;
+    if (!counted_as (c, v->species.at[i], &per, &M)) {
+      return false;
+    }
+    all += n;
+    moles += n * per;
+    mass += n * per * M;
+  }
+  *mass_per_mole = all > 0 ? mass / all : 0;
+  *moles_per_mole = all > 0 ? moles / all : 1;
+  return true;
+}
+
 /* Mass per mole of what the component is counted as, all species of a peak together.  */
 static bool
 counted_mass (struct conversion *c, double *mass_per_mole, double *moles_per_mole)
@@ -95,8 +116,7 @@ counted_mass (struct conversion *c, double *mass_per_mole, double *moles_per_mol
     return true;
   }
   if (c->counted_as) {
-    return fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->counted_as->at,
-                         "only a single component can be counted as another", NULL);
+    return counted_group (c, mass_per_mole, moles_per_mole);
   }
   *mass_per_mole = v->moles > 0 ? v->mass / v->moles : 0;
   *moles_per_mole = 1;
@@ -136,14 +156,32 @@ real_volume_share (struct conversion *c, const struct host *host, double *phi)
   return true;
 }
 
+/* Nobody said that the component is there, nor that it is not, as `<5 ppm` does.  */
+static void
+note_none_stated (struct conversion *c)
+{
+  const struct value *v = c->value;
+  const struct composition *gas = v->of_stream ? v->stream.gas : v->gas->closed;
+  for (size_t k = 0; gas && k < v->species.count; k++) {
+    bool stated = false;
+    for (size_t i = 0; i < gas->count; i++) {
+      stated = stated || gas->species[i] == v->species.at[k];
+    }
+    if (!stated) {
+      note (c->ev, MESSAGE_NOTE_NONE_STATED,
+            v->species.count == 1 ? v->part : v->species.at[k]->key, NULL, NULL);
+    }
+  }
+}
+
 /* A share or a concentration of the component.  */
 static bool
 concentration (struct conversion *c)
 {
   struct host host;
   double factor, per_mass, per_moles;
-  if (c->ev->result && !(c->value->moles > 0)) {
-    note (c->ev, MESSAGE_NOTE_NONE_STATED, c->value->part, NULL, NULL);
+  if (c->ev->result) {
+    note_none_stated (c);
   }
   if (!host_of (c, &host) || !counted_mass (c, &per_mass, &per_moles)
       || !oxygen_factor (c, dry_oxygen (c, host.gas), c->what, &factor)) {
@@ -178,6 +216,24 @@ concentration (struct conversion *c)
   return conversion_add (c, x * (by_mass ? per_mass : per_moles) / volume.Vm, &standing);
 }
 
+/* Above this a share is no trace whose basis may be taken for another.  */
+#define TRACE_MOST 0.01
+
+/* "88 ppm of the wet gas, 100 ppm of the dry": where a trace is in a wet flow; else null.  */
+static const char *
+both_shares (struct conversion *c)
+{
+  const struct value *v = c->value;
+  double y = composition_fraction (v->stream.gas, c->ev->session->water);
+  double x = v->stream.moles > 0 ? v->moles / v->stream.moles : 0;
+  if (!c->ev->describe || !(y > 0 && y < 1 && x > 0 && x < TRACE_MOST)
+      || v->species.at[0] == c->ev->session->water) {
+    return NULL;
+  }
+  return arena_format (c->ev->arena, "%s of the wet gas, %s of the dry",
+                       share_text (c->ev->arena, x), share_text (c->ev->arena, x / (1 - y)));
+}
+
 /* A flow or an amount of the component.  */
 static bool
 partial_flow (struct conversion *c, enum flow_basis basis)
@@ -191,8 +247,12 @@ partial_flow (struct conversion *c, enum flow_basis basis)
   if (!counted_mass (c, &per_mass, &per_moles)) {
     return false;
   }
+  if (basis == FLOW_MASS || basis == FLOW_MOLAR) {
+    standing.basis = both_shares (c);
+  }
   if (basis == FLOW_MASS) {
-    return conversion_add (c, v->species.count == 1 ? v->moles * per_mass : v->mass, &standing);
+    bool by_moles = v->species.count == 1 || c->counted_as;
+    return conversion_add (c, by_moles ? v->moles * per_mass : v->mass, &standing);
   }
   if (basis == FLOW_MOLAR) {
     return conversion_add (c, v->moles * per_moles, &standing);
@@ -266,6 +326,48 @@ trace_oxygen (struct conversion *c, double *factor)
   return oxygen_factor (c, v->oxygen, c->what, factor);
 }
 
+/* The flow of a trace that is within a stream.  A figure of a wet gas says which gas it is of.  */
+static bool
+trace_flow (struct conversion *c)
+{
+  const struct value *v = c->value;
+  struct value part = *v;
+  if (!v->of_stream) {
+    return conversion_mismatch (c, "a concentration is told as a share or per volume");
+  }
+  if (composition_fraction (v->stream.gas, c->ev->session->water) > 0
+      && !(v->words & (WORD_DRY | WORD_WET))) {
+    fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->subject_at,
+                  "the stream is wet: is the figure one of the dry gas or of the wet?", NULL);
+    fault_hint (c->ev->fault, "100 ppm dry of %s within ..., or 100 ppm wet of %s within ...",
+                v->part, v->part);
+    return false;
+  }
+  part.kind = VALUE_PART;
+  part.flow = v->stream.flow;
+  part.moles = v->si * v->stream.moles;
+  part.mass = part.moles * v->species.at[0]->molar_mass;
+  c->value = &part;
+  bool done = convert_part (c);
+  c->value = v;
+  return done;
+}
+
+/* The gas a trace is within, dry if the target says so, and the trace's share of it.  */
+static const struct composition *
+trace_host (struct conversion *c, double *x, struct standing *standing)
+{
+  const struct species *water = c->ev->session->water;
+  const struct composition *host = gas_composition (c->ev, c->value->gas, c->subject_at);
+  double y = host ? composition_fraction (host, water) : 0;
+  if (y > 0 && y < 1 && (c->words & WORD_DRY)) {
+    *x /= 1 - y;
+    host = composition_wetted (c->ev->arena, host, water, 0, c->ev->fault);
+  }
+  standing->moisture = host && y > 0 ? moisture_word (c->ev, host) : NULL;
+  return host;
+}
+
 bool
 convert_trace (struct conversion *c)
 {
@@ -274,7 +376,7 @@ convert_trace (struct conversion *c)
   struct standing standing = { c->what, NULL, with_oxygen (c, NULL) };
   double per, M, factor;
   if (!unit_is_concentration (u)) {
-    return conversion_mismatch (c, "a concentration is told as a share or per volume");
+    return trace_flow (c);
   }
   if (!counted_as (c, v->species.at[0], &per, &M) || !trace_oxygen (c, &factor)) {
     return false;
@@ -286,7 +388,7 @@ convert_trace (struct conversion *c)
              : trace_needs_gas (c);
   }
   const struct composition *host = NULL;
-  if (v->gas && !(host = gas_composition (c->ev, v->gas, c->subject_at))) {
+  if (v->gas && !(host = trace_host (c, &x, &standing))) {
     return false;
   }
   if (u->ratio == RATIO_MASS) {

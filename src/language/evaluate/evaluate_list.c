@@ -74,6 +74,34 @@ component_named (struct evaluation *ev, const struct node *name, struct componen
   return out->gas || name_unknown (ev, name);
 }
 
+/* Components that are told together, NO+NO2: each a component, none twice.  */
+static bool
+group_named (struct evaluation *ev, const char *name, struct species_set *set)
+{
+  const char *candidates;
+  size_t count = 0;
+  if (!strchr (name, '+') || name_find (ev->session, name, strlen (name))) {
+    return false;
+  }
+  for (const char *from = name; from; count++) {
+    size_t n = strcspn (from, "+");
+    const struct species *species;
+    enum species_match match = species_find (ev->session->vocabulary.species, from, n, &species,
+                                             &candidates);
+    if (count == SPECIES_SET_MOST || (match != SPECIES_KEY && match != SPECIES_SYNONYM)) {
+      return false;
+    }
+    for (size_t i = 0; i < count; i++)
+      if (set->at[i] == species) {
+        return false;
+      }
+    set->at[count] = species;
+    from = from[n] == '+' ? from + n + 1 : NULL;
+  }
+  set->count = count;
+  return true;
+}
+
 bool
 species_named (struct evaluation *ev, const struct node *name, struct species_set *set)
 {
@@ -90,6 +118,9 @@ species_named (struct evaluation *ev, const struct node *name, struct species_se
   }
   if (air_is_name (name->text, n)) {
     return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, name->at, "'air' is no component", NULL);
+  }
+  if (group_named (ev, name->text, set)) {
+    return true;
   }
   if (!component_named (ev, name, &c)) {
     return false;

@@ -51,7 +51,7 @@ select_by_name (struct evaluation *ev, const struct node *node)
   fault_set_at (ev->fault, MESSAGE_KIND_WRONG, node->at,
                 arena_format (ev->arena, "'%s' is a %s and does not stand before 'of'", node->text,
                               d->kind == NAME_GAS ? "gas" : d->kind == NAME_STREAM ? "stream"
-                              : d->kind == NAME_SHEET ? "sheet" : "state"),
+                                                                                  : "state"),
                 NULL);
   return SELECT_FAILED;
 }
@@ -111,6 +111,9 @@ part_of (struct evaluation *ev, const struct node *node, const struct state *sta
 
 /* ---- Shares ---- */
 
+/* So small a share of a component is more likely meant of the gas.  */
+#define TRACE_SHARE 0.01
+
 static bool
 share_of (struct evaluation *ev, const struct node *node, const struct value *share,
           const struct state *state, struct value *whole)
@@ -132,6 +135,11 @@ share_of (struct evaluation *ev, const struct node *node, const struct value *sh
   }
   whole->moles *= share->si;
   whole->mass *= share->si;
+  if (ev->result && share->measure.ratio == RATIO_MOLE && share->si < TRACE_SHARE
+      && node->b->kind == NODE_OF && node->b->a->kind == NODE_NAME) {
+    note (ev, MESSAGE_NOTE_SHARE_OF_PART, share_text (ev->arena, share->si), node->b->a->text,
+          NULL);
+  }
   return true;
 }
 
@@ -151,7 +159,7 @@ trace_volume (struct evaluation *ev, const struct node *figure, const struct val
     return family_molar_volume (ev, quantity->measure.family, host,
                                 (quantity->words & WORD_REAL) != 0, Vm);
   }
-  if (isnan (trace->T) && isnan (trace->p)
+  if ((isnan (trace->T) || isnan (trace->p))
       && !isnan (ev->settings->family[FAMILY_NONE].at.T)) {
     return family_molar_volume (ev, FAMILY_NONE, host, false, Vm);
   }
@@ -167,6 +175,25 @@ trace_volume (struct evaluation *ev, const struct node *figure, const struct val
   const char *model;
   struct volume_question question = { host, trace->T, trace->p, UNSTATED, host == NULL };
   return actual_molar_volume (ev, &question, Vm, &Z, &model);
+}
+
+/* A figure of the dry gas, within one that has water: less of the whole.  */
+static void
+trace_wets (struct evaluation *ev, const struct node *figure, const struct gas_value *host,
+            struct value *trace)
+{
+  double y = host && host->closed ? composition_fraction (host->closed, ev->session->water) : 0;
+  if (!(y > 0 && y < 1) || !(trace->words & WORD_DRY)) {
+    return;
+  }
+  trace->si *= 1 - y;
+  if (ev->result) {
+    const char *typed = figure->figure && figure->unit_text
+                          ? arena_format (ev->arena, "%s %s", figure->figure, figure->unit_text)
+                          : "the figure";
+    note (ev, MESSAGE_NOTE_TRACE_DRY, typed, share_text (ev->arena, trace->si),
+          share_text (ev->arena, y));
+  }
 }
 
 static const struct dimension CONCENTRATION_BY_MOLES = { -3, 0, 0, 0, 1 };
@@ -217,6 +244,7 @@ trace_of (struct evaluation *ev, const struct node *node, const struct value *qu
     trace.si *= gas->molar_mass / molar_mass;
     trace.measure.ratio = RATIO_MOLE;
   }
+  trace_wets (ev, node->a, host, &trace);
   if (!(trace.si >= 0 && trace.si <= 1)) {
     return fault_set_at (ev->fault, MESSAGE_RANGE, node->a->at,
                          trace.si < 0 ? "a concentration below zero"
@@ -328,8 +356,13 @@ within (struct evaluation *ev, const struct node *node, const struct state *stat
     return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, node->b->at,
                          "a trace is within a gas", NULL);
   }
-  return evaluate_quantity (ev, of->a, &quantity)
-         && trace_of (ev, of, &quantity, host.gas, state, out);
+  if (!evaluate_quantity (ev, of->a, &quantity)
+      || !trace_of (ev, of, &quantity, host.gas, state, out)) {
+    return false;
+  }
+  out->of_stream = host.kind == VALUE_STREAM;
+  out->stream = host.stream;
+  return true;
 }
 
 bool

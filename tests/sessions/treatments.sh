@@ -1,6 +1,6 @@
 #!/bin/sh
-# Sheets of stated figures.
+# Treatments of analyses, and concentrations of traces in wet and dry gas.
 set -u
 # shellcheck source=tests/sessions/session.sh
 . "${srcdir:-.}/tests/sessions/session.sh"
-session sheets
+session treatments
