@@ -5,6 +5,7 @@
 #include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/check/sheet.h"
 #include "language/evaluate/wording.h"
 #include "property/hazard.h"
 #include "result/result.h"
@@ -38,6 +39,17 @@ collect_name (const struct node *node, void *with)
   list->at[list->count++] = node->text;
 }
 
+/* The lines of a block hang behind the one that opens it.  */
+static bool
+rest_of_block (struct parser *parser, struct statement *first, struct fault *fault)
+{
+  for (struct statement *s = first; s && parser_block (parser) != BLOCK_NONE; s = s->next)
+    if (!parser_next (parser, &s->next, fault)) {
+      return false;
+    }
+  return true;
+}
+
 struct definition *
 definition_make (struct session *session, const char *source, enum name_kind kind,
                  struct fault *fault)
@@ -51,6 +63,10 @@ definition_make (struct session *session, const char *source, enum name_kind kin
   struct parser *parser = parser_create (arena, &session->vocabulary, d->source,
                                          strlen (d->source), 1, BLOCK_NONE);
   if (!parser_next (parser, &statement, fault)) {
+    arena_destroy (arena);
+    return NULL;
+  }
+  if (!rest_of_block (parser, statement, fault)) {
     arena_destroy (arena);
     return NULL;
   }
@@ -277,6 +293,10 @@ body (struct evaluation *ev, const struct definition *d, struct value *out, stru
     break;
   case NAME_REFERENCE:
     done = reference_body (ev, d->statement, state);
+    break;
+  case NAME_SHEET:
+    *out = value_number (UNSTATED);
+    done = sheet_holds (ev, d->statement);
     break;
   }
   if (!done && d->statement->value) {

@@ -1,6 +1,7 @@
 noinst_LIBRARIES += %D%/liblanguage.a
 
 %C%_liblanguage_a_SOURCES = \
+  %D%/block.c \
   %D%/check/candidates.c \
   %D%/check/hold.c \
   %D%/check/hold.h \
@@ -9,6 +10,8 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/check/readings.h \
   %D%/check/search.c \
   %D%/check/search.h \
+  %D%/check/sheet.c \
+  %D%/check/sheet.h \
   %D%/check/trial.c \
   %D%/check/trial.h \
   %D%/commands/card_gas.c \

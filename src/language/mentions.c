@@ -23,6 +23,12 @@ visit_node (const struct node *node, void (*visit) (const struct node *, void *)
 void
 tree_visit (const struct statement *s, void (*visit) (const struct node *, void *), void *with)
 {
+  for (const struct statement *line = s->next; line; line = line->next) {
+    visit_node (line->value, visit, with);
+    visit_node (line->claim, visit, with);
+    visit_node (line->inlets, visit, with);
+    visit_node (line->outlets, visit, with);
+  }
   visit_node (s->value, visit, with);
   for (const struct stated_property *p = s->stated; p; p = p->next) {
     visit_node (p->quantity, visit, with);

@@ -200,7 +200,7 @@ not_circular (struct session *s, const struct statement *from, struct fault *fau
 static const char *
 kind_name (enum name_kind kind)
 {
-  static const char *const names[] = { "gas", "stream", "quantity", "state" };
+  static const char *const names[] = { "gas", "stream", "quantity", "state", "sheet" };
   return names[kind];
 }
 
@@ -231,8 +231,13 @@ dependents_hold (struct session *s, const struct statement *from, enum name_kind
 
 /* Places counted in a definition's source, counted in the line it was typed in.  */
 static void
-shift_place (struct fault *fault, const struct statement *from, const char *source)
+shift_place (struct session *s, struct fault *fault, const struct statement *from,
+             const char *source)
 {
+  if (from->kind == STATEMENT_SHEET) {
+    block_place (s, fault);
+    return;
+  }
   if (strcmp (source, from->source) != 0) {
     fault->at = from->name_at;
     return;
@@ -264,7 +269,7 @@ name_define (struct session *s, const struct statement *from, const char *source
 {
   struct definition *d = definition_make (s, source, kind, fault);
   if (!d || !not_circular (s, d->statement, fault)) {
-    shift_place (fault, from, source);
+    shift_place (s, fault, from, source);
     definition_release (d);
     return false;
   }
@@ -274,7 +279,7 @@ name_define (struct session *s, const struct statement *from, const char *source
   names_remember_mentions (s, d);
   bool done = definition_refresh (s, d, fault);
   if (!done) {
-    shift_place (fault, from, source);
+    shift_place (s, fault, from, source);
   }
   done = done && dependents_hold (s, from, before ? before->kind : kind, fault);
   if (done) {

@@ -70,6 +70,7 @@ session_destroy (struct session *s)
   if (!s) {
     return;
   }
+  block_drop (s);
   undo_clear (s);
   names_clear (s);
   if (s->references) {
@@ -104,14 +105,19 @@ session_vocabulary (const struct session *s)
 enum block
 session_block (const struct session *s)
 {
-  (void) s;
-  return BLOCK_NONE;                    /* no statement of this version opens a block */
+  return s->block.arena ? s->block.kind : BLOCK_NONE;
 }
 
 void
 session_leave_block (struct session *s)
 {
-  (void) s;
+  block_drop (s);
+}
+
+void
+session_spoil_block (struct session *s)
+{
+  s->block.spoilt = s->block.arena != NULL;
 }
 
 bool

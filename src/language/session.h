@@ -25,6 +25,8 @@ const struct vocabulary *session_vocabulary (const struct session *);
 /* Where the next line stands.  */
 enum block session_block (const struct session *);
 void session_leave_block (struct session *);             /* Ctrl-C in a block drops it */
+/* A line of the block failed where nobody types it anew: its `end` will refuse the whole.  */
+void session_spoil_block (struct session *);
 
 /* Runs one statement; what it answers is put into RESULT (already initialised), in RESULT's
    arena.  False with FAULT.                                                                     */

@@ -12,7 +12,7 @@ struct calorific_tables; struct composition; struct map; struct property_tables;
 struct readings; struct reference_table; struct remark; struct result;
 struct species;
 
-enum name_kind { NAME_GAS, NAME_STREAM, NAME_QUANTITY, NAME_REFERENCE };
+enum name_kind { NAME_GAS, NAME_STREAM, NAME_QUANTITY, NAME_REFERENCE, NAME_SHEET };
 
 /* A name and its formula.  The tree was parsed from `source` into the definition's own arena and
    is never changed; a redefinition makes another definition.  What it came to is kept until a
@@ -51,8 +51,21 @@ struct change {
 
 enum { UNDO_MOST = 200 };
 
+/* A block whose `end` has not come yet.  */
+struct open_block {
+  struct arena *arena;                     /* null: no block is open */
+  enum block kind;
+  const char *name;
+  struct place name_at;
+  const char **line;                       /* the statements so far, the first one included */
+  struct place *at;                        /* where each was typed */
+  size_t count, room;
+  bool spoilt;                             /* a line of it failed where nobody can type it anew */
+};
+
 struct session {
   struct session_options options;
+  struct open_block block;
   struct vocabulary vocabulary;
   struct reference_table *references;
   const struct species *water, *oxygen;
@@ -138,6 +151,16 @@ size_t name_place (struct session *, const char *name, struct definition *, size
 void names_clear (struct session *);
 /* The names of definitions whose figures lean on what BITS stand for: "raw, feed"; null: none.  */
 const char *names_touching (const struct session *, struct arena *, unsigned bits);
+
+/* ---- Blocks (block.c) ---- */
+
+bool block_open (struct session *, const struct statement *, struct fault *) MUST_CHECK;
+bool block_add (struct session *, const struct statement *, struct fault *) MUST_CHECK;
+bool block_close (struct session *, const struct statement *end, struct result *,
+                  struct fault *) MUST_CHECK;
+void block_drop (struct session *);
+/* A place counted in the source of the open block, counted where the line was typed.  */
+void block_place (const struct session *, struct fault *);
 
 /* ---- Who leans on whom (mentions.c) ---- */
 

@@ -165,6 +165,7 @@ struct statement {
   const struct aim *aims; enum optimum optimum; const struct node *least;
   /* boundaries */
   const struct node *inlets, *outlets;
+  struct statement *next;         /* of a block: the line behind this one */
 };
 
 #endif

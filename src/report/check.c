@@ -15,10 +15,13 @@
 #include "result/check_verdict.h"
 #include "result/result.h"
 
+/* Nobody argues about less.  */
+#define WORTH_SAYING 5e-5
+
 enum { GAP = 3, GAP_UNIT = 2, LABEL_WIDTH = 13 };
 
 /* The figures of all rows stand under each other.  */
-struct column { size_t whole, fraction, unit; };
+struct column { size_t label, whole, fraction, unit; };
 
 static size_t
 larger (size_t a, size_t b)
@@ -55,12 +58,25 @@ measure_one (const struct report_style *style, struct column *column, double val
   text_clear (&figure);
 }
 
+/* What the user called a figure of a sheet, else as it was stated.  */
+static const char *
+figure_label (const struct check_figure *f)
+{
+  return f->name != NULL ? f->name : f->stated;
+}
+
 static struct column
 measure (const struct report_style *style, const struct check_verdict *v)
 {
-  struct column column = { 0, 0, 0 };
-  if (v->figures == NULL)
-    measure_one (style, &column, v->computed, v->unit);
+  struct column column = { .label = LABEL_WIDTH };
+  if (v->figures != NULL) {
+    for (const struct check_figure *f = v->figures; f != NULL; f = f->next) {
+      measure_one (style, &column, f->computed, f->unit);
+      column.label = larger (column.label, shown_width (style, figure_label (f)) + NAME_DOTS);
+    }
+    return column;
+  }
+  measure_one (style, &column, v->computed, v->unit);
   for (const struct check_reading *r = v->readings; r != NULL; r = r->next)
     measure_one (style, &column, r->value, r->unit);
   for (const struct check_reading *r = v->ruled_out; r != NULL; r = r->next)
@@ -68,8 +84,6 @@ measure (const struct report_style *style, const struct check_verdict *v)
   for (const struct check_need *n = v->needs; n != NULL; n = n->next)
     if (isfinite (n->value))
       measure_one (style, &column, n->value, n->unit);
-  for (const struct check_figure *f = v->figures; f != NULL; f = f->next)
-    measure_one (style, &column, f->computed, f->unit);
   return column;
 }
 
@@ -80,10 +94,9 @@ row_open (struct text *out, const struct report_style *style, const struct colum
 {
   text_add_repeated (out, ' ', MARGIN);
   if (label != NULL)
-    leader_add (out, style, label, LABEL_WIDTH);
+    leader_add (out, style, label, column->label);
   else
-    text_add_repeated (out, ' ', LABEL_WIDTH);
-  (void) column;
+    text_add_repeated (out, ' ', column->label);
 }
 
 static void
@@ -126,6 +139,10 @@ percent_add (struct text *out, double ratio)
 static void
 outcome_add (struct text *out, const struct check_verdict *v)
 {
+  if (v->figures != NULL) {
+    text_add_format (out, "%zu OF %zu AGREE", v->agreeing, v->figure_count);
+    return;
+  }
   switch (v->outcome) {
   case CHECK_HOLDS:
     text_add (out, "HOLDS");
@@ -156,22 +173,49 @@ difference_add (struct text *out, const struct report_style *style, const struct
   text_add (out, v->by_digits ? " by its digits" : " by its uncertainty");
 }
 
+/* How many figures of a sheet agree, under what, and which of them does not.  */
+static void
+agreement_add (struct text *out, const struct report_style *style, const struct check_verdict *v)
+{
+  const struct check_figure *alone = NULL;
+  for (const struct check_figure *f = v->figures; f != NULL; f = f->next)
+    alone = f->holds ? alone : f;
+  if (v->outcome == CHECK_HOLDS)
+    text_add (out, "as written");
+  else if (v->outcome == CHECK_READINGS)
+    text_add_format (out, v->reading_count == 1 ? "under one reading"
+                                                : "under any of %zu readings", v->reading_count);
+  else
+    text_add (out, "no reading makes more of them agree");
+  if (alone != NULL && v->figure_count - v->agreeing == 1) {
+    text_add (out, "; ");
+    shown_add (out, style, figure_label (alone));
+    text_add (out, " stands alone");
+  }
+}
+
 static void
 sheet_add (struct text *out, const struct report_style *style, const struct check_verdict *v,
            const struct column *column)
 {
   for (const struct check_figure *f = v->figures; f != NULL; f = f->next) {
-    row_open (out, style, column, f->name != NULL ? f->name : f->stated);
+    row_open (out, style, column, figure_label (f));
     row_figure (out, style, column, f->computed, f->unit);
     text_add (out, f->holds ? f->as_written ? "agrees as written" : "agrees"
                             : "stands alone");
     text_add (out, ", stated ");
     shown_add (out, style, f->stated);
-    if (isfinite (f->deviation)) {
+    if (isfinite (f->deviation) && fabs (f->deviation) >= WORTH_SAYING) {
       text_add (out, " (");
       effect_write (out, f->deviation);
       text_add (out, ")");
     }
+    line_end (out);
+  }
+  for (const struct check_reading *r = v->readings; r != NULL; r = r->next) {
+    row_open (out, style, column, r == v->readings ? "reads as" : NULL);
+    text_add_repeated (out, ' ', GAP);
+    shown_add (out, style, r->reading);
     line_end (out);
   }
 }
@@ -270,14 +314,15 @@ report_check (struct text *out, const struct report_style *style, const struct r
   weight_close (out, style);
   text_add_repeated (out, ' ', GAP);
   if (v->figures != NULL)
-    text_add_format (out, "%zu of %zu figures agree", v->agreeing, v->figure_count);
+    agreement_add (out, style, v);
   else
     difference_add (out, style, v);
   line_end (out);
-  if (v->figures != NULL)
+  if (v->figures != NULL) {
     sheet_add (out, style, v, &column);
-  else
-    computed_add (out, style, v, result->answers, &column);
+    return;
+  }
+  computed_add (out, style, v, result->answers, &column);
   readings_add (out, style, v->readings, v->outcome == CHECK_HOLDS ? "fits too" : "fits", &column);
   ruled_out_add (out, style, v, &column);
   needs_add (out, style, v, &column);

@@ -76,6 +76,12 @@ tell_fault (struct script *script, const struct script_line *line, const struct 
   script->failed = true;
   origin.line = physical_line (script->arena, line, fault->at.line, &is_last);
   origin.quote = line->file != NULL || !is_in_sight (line, origin.line, is_last, answered);
+  if (fault->quote != NULL) {
+    origin.line = fault->quote;
+    origin.quote = true;
+  }
+  if (line->file != NULL)
+    session_spoil_block (script->session);
   output_fault (script->output, fault, &origin);
 }
 

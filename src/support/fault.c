@@ -78,6 +78,12 @@ fault_hint (struct fault *fault, const char *format, ...)
 }
 
 void
+fault_quote (struct fault *fault, const char *line)
+{
+  fault->quote = line;
+}
+
+void
 fault_place (struct fault *fault, struct place at)
 {
   if (fault->kind != MESSAGE_NONE && fault->at.line == 0)

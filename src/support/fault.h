@@ -21,6 +21,8 @@ struct fault {
   struct place at;
   const char *fact[MESSAGE_FACTS];
   const char *hint;                                      /* null: the kind's usual way on */
+  const char *quote;                                     /* the line the place is in, where that
+                                                            is an earlier one; else null */
   struct arena *arena;
   bool dropping;                                         /* the last one set came too late */
 };
@@ -36,6 +38,8 @@ bool fault_set_at (struct fault *, enum message, struct place, const char *fact1
    are dropped with it if it came too late.                                                    */
 void fault_facts (struct fault *, const char *fact3, const char *fact4);
 void fault_hint (struct fault *, const char *format, ...) PRINTF_LIKE (2, 3);
+/* Says which line the place is in, where that is not the one at hand.  */
+void fault_quote (struct fault *, const char *line);
 /* Gives a fault without a place this one.  */
 void fault_place (struct fault *, struct place);
 

@@ -99,7 +99,8 @@ look_at_fault (const struct run *run, const struct fault *fault, const char *lin
   struct text out;
   if (fault->kind == MESSAGE_NONE)
     broken (run, "failed without saying why");
-  if (!is_inside (line, n, first, fault->at))
+  /* A place in an earlier line of a block brings that line with it.  */
+  if (!fault->quote && !is_inside (line, n, first, fault->at))
     broken (run, "a fault points outside its text");
   text_init (&out);
   for (int form = 0; form < REPORT_FORMATS; form++) {
@@ -118,7 +119,7 @@ names_of (const struct run *run, struct arena *arena)
   static const char asked[] = "list; set";
   const struct report_style style = { .digits = 6 };
   struct parser *parser = parser_create (arena, session_vocabulary (run->session), asked,
-                                         sizeof asked - 1, 1, session_block (run->session));
+                                         sizeof asked - 1, 1, BLOCK_NONE);
   struct statement *statement;
   struct fault fault;
   struct text out;

@@ -22,6 +22,7 @@ session_tests = \
   %D%/refused.sh \
   %D%/roundtrips.sh \
   %D%/scenarios.sh \
+  %D%/sheets.sh \
   %D%/treatments.sh \
   %D%/trims.sh \
   %D%/uncertainty.sh

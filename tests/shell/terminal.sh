@@ -53,6 +53,33 @@ END
   finish
 fi
 
+plays "a block has a rail of its own, keeps what is right, and Ctrl-C drops it" << 'END'
+see gas | 
+type sheet offer of air\r
+see    || 
+type inlet: 1057 ft3/min at 32 degC\r
+see    || 
+type 3 kg\r
+see error: one is a flow and another an amount
+see    || 
+type duty: 1000 scfm\r
+see    || 
+type end\r
+see gas | 
+type check offer\r
+see 2 OF 2 AGREE
+see gas | 
+type sheet other of air\r
+see    || 
+type \x03
+see gas | 
+type list\r
+see offer
+see gas | 
+type \x04
+end 0
+END
+
 plays "opening line, prompt, answer, end of input" << 'END'
 see gaswright 0.1   barometer 1.01325 bar (standard)   volumes ideal-gas   F1 help\n\ngas | 
 type 12 kg in g\r

@@ -63,6 +63,17 @@ claim_spread (struct check *check, const struct node *claim, struct fault *fault
   return true;
 }
 
+bool
+claim_limit (struct check *check, const struct node *claim, struct fault *fault, double *limit)
+{
+  double u;
+  if (!claim_spread (check, claim, fault, &u)) {
+    return false;
+  }
+  *limit = claim->spread ? 2 * u : rounding (claim);
+  return true;
+}
+
 /* ---- What the figure is told in ---- */
 
 static bool
@@ -103,7 +114,6 @@ fill (struct check *check, int side)
   struct settings *s = &check->base[side].settings;
   s->family[FAMILY_NONE] = s->family[FAMILY_STANDARD];
   check->base[side].overridden |= touch_family (FAMILY_NONE);
-  check->open[side] = true;
 }
 
 static void
@@ -165,7 +175,9 @@ work_out (struct check *check, int side)
     return false;
   }
   fill (check, side);
-  return look (check, side, &fault);
+  bool done = look (check, side, &fault);
+  check->open[side] = (check->touched[side] & touch_family (FAMILY_NONE)) != 0;
+  return done;
 }
 
 /* A bare volume of something that has a state: whichever of that and the usual conditions comes
@@ -180,6 +192,7 @@ choose_state (struct check *check)
   }
   fill (check, SIDE_STATED);
   bool filled = look (check, SIDE_STATED, &fault);
+  check->open[SIDE_STATED] = filled;
   if (!filled || fabs (own - claim) <= fabs (check->figure - claim)) {
     leave_own (check);
     check->open[SIDE_STATED] = filled && look (check, SIDE_STATED, &fault);
@@ -210,7 +223,7 @@ answer (struct check *check, struct result *result, struct fault *fault, double 
 {
   struct evaluation ev;
   struct settings both = check->base[SIDE_COMPUTED].settings;
-  if (check->open[SIDE_STATED]) {
+  if (check->base[SIDE_STATED].overridden) {
     both.family[FAMILY_NONE] = check->base[SIDE_STATED].settings.family[FAMILY_NONE];
   }
   evaluation_init (&ev, check->session, result, fault);
@@ -228,7 +241,7 @@ bool
 check_hold (struct check *check, struct session *session, const struct statement *s,
             const struct node *claim, struct result *result, struct fault *fault)
 {
-  double u_claim, u_computed = 0;
+  double limit, u_computed = 0;
   struct result aside;
   *check = (struct check) { .session = session, .arena = fault->arena };
   check->scratch = arena_create ();
@@ -237,7 +250,7 @@ check_hold (struct check *check, struct session *session, const struct statement
     check->base[i].settings = *session_settings (session);
   }
   if (!make_target (check, s, claim, fault)
-      || !claim_spread (check, check->claim, fault, &u_claim)) {
+      || !claim_limit (check, check->claim, fault, &limit)) {
     return false;
   }
   bool done = work_out (check, SIDE_COMPUTED) && work_out (check, SIDE_STATED);
@@ -257,7 +270,7 @@ check_hold (struct check *check, struct session *session, const struct statement
     tell_open (check, result);
   }
   check->by_digits = !check->claim->spread;
-  check->limit = hypot (check->by_digits ? rounding (check->claim) : 2 * u_claim, 2 * u_computed);
+  check->limit = hypot (limit, 2 * u_computed);
   return true;
 }
 

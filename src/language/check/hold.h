@@ -13,6 +13,10 @@ struct fault; struct node; struct result; struct statement;
    when it failed.                                                                               */
 bool check_hold (struct check *, struct session *, const struct statement *s,
                  const struct node *claim, struct result *, struct fault *) MUST_CHECK;
+/* How far the claim's quantity may be off, in its unit: two standard uncertainties where it has ±,
+   else its rounding.                                                                            */
+bool claim_limit (struct check *, const struct node *quantity, struct fault *, double *limit)
+  MUST_CHECK;
 void check_release (struct check *);
 
 #endif

@@ -215,6 +215,27 @@ card_of_state (struct session *session, const struct definition *d, struct resul
   card_add_line (result, card, d->source);
 }
 
+/* The statement is that of the definition: its places are places in its source.  */
+void
+card_of_sheet (const struct definition *d, struct result *result)
+{
+  struct arena *arena = result->arena;
+  size_t n = 0;
+  for (const struct statement *s = d->statement->next; s; s = s->next) {
+    n += s->kind == STATEMENT_FIGURE;
+  }
+  struct card *card = result_card (result, d->name,
+                                   arena_format (arena, "sheet of %s, %zu figure%s",
+                                                 node_text (arena, d->statement,
+                                                            d->statement->value),
+                                                 n, n == 1 ? "" : "s"), 1, blank);
+  for (const struct statement *s = d->statement->next; s; s = s->next)
+    if (s->kind == STATEMENT_FIGURE) {
+      struct cell *cells = card_add_row (result, card, s->name ? s->name : "");
+      cells[0].text = node_text (arena, s, s->claim);
+    }
+}
+
 void
 card_of_property (struct session *session, enum property property, struct result *result)
 {

@@ -2,9 +2,11 @@
 #include "language/commands/commands.h"
 
 #include <math.h>
+#include <string.h>
 #include "gas/composition.h"
 #include "language/check/hold.h"
 #include "language/check/search.h"
+#include "language/check/sheet.h"
 #include "language/evaluate/flow.h"
 #include "property/enhancement.h"
 #include "result/check_verdict.h"
@@ -59,6 +61,53 @@ verdict (struct check *check, const struct readings *readings, struct check_verd
   return true;
 }
 
+/* Everything a sheet's figures took for granted, without effects: they are of many figures.  */
+static void
+tell_sheet (struct session *session, struct definition *d, const struct check_verdict *v,
+            struct result *result)
+{
+  for (size_t i = 0; i < d->assumption_count; i++) {
+    const struct assumption *a = &d->assumptions[i];
+    struct remark *r = result_remark (result, a->kind, a->fact[0], a->fact[1]);
+    r->fact[2] = a->fact[2];
+    r->fact[3] = a->fact[3];
+  }
+  definition_tell (session, d, false, result);
+  if (v->tied > 1) {
+    result_remark (result, MESSAGE_NOTE_CHECK_TIE,
+                   arena_format (result->arena, "%zu", v->tied), NULL);
+  }
+  result_remark (result, MESSAGE_CAUTION_CUSTODY, NULL, NULL);
+}
+
+static bool
+check_sheet (struct session *session, const struct statement *s, struct result *result,
+             struct fault *fault)
+{
+  struct definition *d = name_find (session, s->name, strlen (s->name));
+  struct node name = { .kind = NODE_NAME, .text = s->name, .at = s->name_at };
+  struct check_verdict *v = ARENA_NEW (result->arena, struct check_verdict);
+  struct evaluation ev;
+  evaluation_init (&ev, session, NULL, fault);
+  if (!d) {
+    return name_unknown (&ev, &name);
+  }
+  if (d->kind != NAME_SHEET) {
+    fault_set_at (fault, MESSAGE_KIND_WRONG, s->name_at,
+                  arena_format (result->arena, "'%s' is no sheet", s->name), NULL);
+    fault_hint (fault, "check %s in ... against ...", s->name);
+    return false;
+  }
+  if ((!d->fresh && !definition_refresh (session, d, fault))
+      || !sheet_check (session, d, session->readings, v, fault)) {
+    fault->at = s->name_at;
+    return false;
+  }
+  tell_sheet (session, d, v, result);
+  result->check = v;
+  return true;
+}
+
 bool
 command_check (struct session *session, const struct statement *s, struct result *result,
                struct fault *fault)
@@ -69,6 +118,9 @@ command_check (struct session *session, const struct statement *s, struct result
   if (!readings) {
     fault_place (fault, s->at);
     return false;
+  }
+  if (!s->claim) {
+    return check_sheet (session, s, result, fault);
   }
   bool done = check_hold (&check, session, s, s->claim, result, fault)
               && verdict (&check, readings, v, fault);

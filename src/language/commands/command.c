@@ -24,7 +24,7 @@ only_read (struct session *session, const struct statement *s, struct fault *fau
   }
   bool named = s->kind < sizeof statement_word / sizeof statement_word[0];
   fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->at,
-                named ? statement_word[s->kind] : "balances and sheets", NULL);
+                named ? statement_word[s->kind] : "balances", NULL);
   return false;
 }
 
@@ -64,10 +64,13 @@ command_run (struct session *session, const struct statement *s, struct result *
   case STATEMENT_UNDO:
     return command_undo (session, s, result, fault);
   case STATEMENT_CHECK:
-    if (s->claim) {
-      return command_check (session, s, result, fault);
-    }
-    break;
+    return command_check (session, s, result, fault);
+  case STATEMENT_SHEET:
+    return block_open (session, s, fault);
+  case STATEMENT_FIGURE:
+    return block_add (session, s, fault);
+  case STATEMENT_END:
+    return block_close (session, s, result, fault);
   case STATEMENT_TRIM:
     return command_trim (session, s, result, fault);
   case STATEMENT_QUIT:
@@ -77,7 +80,6 @@ command_run (struct session *session, const struct statement *s, struct result *
   case STATEMENT_ASK:
   case STATEMENT_BALANCE:
   case STATEMENT_SOLVE:
-  case STATEMENT_SHEET:
   case STATEMENT_NOTE:
   case STATEMENT_WORKINGS:
   case STATEMENT_MIX:
@@ -86,8 +88,6 @@ command_run (struct session *session, const struct statement *s, struct result *
   case STATEMENT_REACT:
   case STATEMENT_COMPONENTS:
   case STATEMENT_KNOWN:
-  case STATEMENT_FIGURE:
-  case STATEMENT_END:
     break;
   }
   return only_read (session, s, fault);

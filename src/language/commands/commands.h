@@ -34,6 +34,7 @@ bool card_of_unit (struct session *, const struct unit *, struct result *, struc
   MUST_CHECK;
 void card_of_reference (struct session *, const struct reference *, struct result *);
 void card_of_state (struct session *, const struct definition *, struct result *);
+void card_of_sheet (const struct definition *, struct result *);
 void card_of_property (struct session *, enum property, struct result *);
 /* All settings, or only ONE.  */
 void card_of_settings (struct session *, const enum setting *one, struct result *);

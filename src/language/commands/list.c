@@ -33,8 +33,20 @@ count_text (struct result *result, size_t n)
 static const char *
 kind_word (enum name_kind kind)
 {
-  static const char *const words[] = { "gas", "stream", "quantity", "reference conditions" };
+  static const char *const words[] = { "gas", "stream", "quantity", "reference conditions",
+                                       "sheet" };
   return words[kind];
+}
+
+/* The lines of a block behind each other.  */
+static const char *
+one_line (struct arena *arena, const char *source)
+{
+  char *line = arena_string (arena, source);
+  for (char *s = line; *s; s++) {
+    *s = *s == '\n' ? ' ' : *s;
+  }
+  return line;
 }
 
 static void
@@ -49,7 +61,7 @@ list_names (struct session *s, const enum name_kind *only, struct result *result
     if (!only || s->order[i]->kind == *only) {
       struct cell *cells = add_text_row (result, card, s->order[i]->name,
                                          kind_word (s->order[i]->kind));
-      cells[1].text = s->order[i]->source;
+      cells[1].text = one_line (result->arena, s->order[i]->source);
     }
   if (n == 0) {
     card_add_line (result, card, "nothing is defined yet: help gas, help stream");
@@ -181,6 +193,10 @@ command_list (struct session *session, const struct statement *s, struct result 
   static const char *const own[] = { "gases", "streams", "quantities" };
   if (!s->name) {
     list_names (session, NULL, result);
+    return true;
+  }
+  if (strcmp (s->name, "sheets") == 0) {
+    list_names (session, &(enum name_kind) { NAME_SHEET }, result);
     return true;
   }
   for (enum name_kind kind = NAME_GAS; kind <= NAME_QUANTITY; kind++)

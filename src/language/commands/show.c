@@ -31,6 +31,9 @@ show_definition (struct session *session, const struct statement *s, struct defi
   case NAME_REFERENCE:
     card_of_state (session, d, result);
     return true;
+  case NAME_SHEET:
+    card_of_sheet (d, result);
+    return true;
   }
   return false;
 }

@@ -375,7 +375,7 @@ conversion_volume (struct conversion *c, const struct composition *gas,
     isnan (c->state.p) ? fallback->p : c->state.p,
     own && isnan (c->state.Z) ? fallback->Z : c->state.Z, (c->words & WORD_IDEAL) != 0
   };
-  if (isnan (q.T) || isnan (q.p)) {
+  if ((isnan (q.T) || isnan (q.p)) && !volume_fill (ev, &q.T, &q.p)) {
     return no_volume_state (c);
   }
   struct actual a = { .T = q.T, .p = q.p, .customary = customary_unit (c->unit_text) };

@@ -109,12 +109,13 @@ ideal_moles_per (struct conversion *c, const struct measure *m, double T, double
     return conversion_mismatch (c, "of which gas? only volumes and moles of an ideal gas are "
                                 "told without one");
   }
-  if ((isnan (T) || isnan (p)) && !isnan (ev->settings->family[FAMILY_NONE].at.T)) {
+  if (isnan (T) && isnan (p) && !isnan (ev->settings->family[FAMILY_NONE].at.T)) {
     struct conditions at = ev->settings->family[FAMILY_NONE].at;
+    evaluation_touch (ev, touch_family (FAMILY_NONE));
     *per = at.p / (GAS_CONSTANT * at.T);
     return true;
   }
-  if (isnan (T) || isnan (p)) {
+  if ((isnan (T) || isnan (p)) && !volume_fill (ev, &T, &p)) {
     fault_set_at (ev->fault, MESSAGE_STATE_MISSING, c->at,
                   target ? c->unit_text : "the volume typed", NULL);
     fault_hint (ev->fault,

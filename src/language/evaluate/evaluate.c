@@ -166,6 +166,12 @@ defined_name (struct evaluation *ev, struct definition *definition, const struct
     fault_hint (ev->fault, "... at %s", node->text);
     return false;
   }
+  if (definition->kind == NAME_SHEET) {
+    fault_set_at (ev->fault, MESSAGE_KIND_WRONG, node->at,
+                  arena_format (ev->arena, "'%s' is a sheet, not a figure", node->text), NULL);
+    fault_hint (ev->fault, "check %s", node->text);
+    return false;
+  }
   const struct value *value = definition_value (ev, definition, node->at);
   if (!value) {
     return false;

@@ -51,7 +51,7 @@ select_by_name (struct evaluation *ev, const struct node *node)
   fault_set_at (ev->fault, MESSAGE_KIND_WRONG, node->at,
                 arena_format (ev->arena, "'%s' is a %s and does not stand before 'of'", node->text,
                               d->kind == NAME_GAS ? "gas" : d->kind == NAME_STREAM ? "stream"
-                                                                                  : "state"),
+                              : d->kind == NAME_SHEET ? "sheet" : "state"),
                 NULL);
   return SELECT_FAILED;
 }
@@ -159,7 +159,7 @@ trace_volume (struct evaluation *ev, const struct node *figure, const struct val
     return family_molar_volume (ev, quantity->measure.family, host,
                                 (quantity->words & WORD_REAL) != 0, Vm);
   }
-  if ((isnan (trace->T) || isnan (trace->p))
+  if (isnan (trace->T) && isnan (trace->p)
       && !isnan (ev->settings->family[FAMILY_NONE].at.T)) {
     return family_molar_volume (ev, FAMILY_NONE, host, false, Vm);
   }

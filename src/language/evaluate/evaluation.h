@@ -223,6 +223,10 @@ bool heat_per_mole (struct evaluation *, const struct composition *, bool net, d
 /* Volume of one mole at a family's conditions: ideal gas, or real by the gas model.  */
 bool family_molar_volume (struct evaluation *, enum reference_family, const struct composition *,
                           bool real, double *Vm) MUST_CHECK;
+/* While a check fills in what a volume leaves open: the pressure is the barometer where only T is
+   said, the temperature that of the conditions tried where only p is.  False: nothing is filled in,
+   or neither is said.                                                                           */
+bool volume_fill (struct evaluation *, double *T, double *p) MUST_CHECK;
 /* Volume of one mole of GAS at T, p by the gas model in force, by Z if given, or ideal.  Assumes
    and notes what it must.  *Z says what was used, *MODEL by what ("as given").                  */
 struct volume_question { const struct composition *gas; double T, p, Z; bool ideal; };

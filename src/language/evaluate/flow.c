@@ -70,6 +70,23 @@ no_state (struct evaluation *ev, const struct flow_figure *f)
   return false;
 }
 
+/* An actual volume of which no state is said: none, unless a check tries conditions for it.  */
+static bool
+open_moles (struct evaluation *ev, const struct flow_figure *f, const struct composition *counted,
+            double *per)
+{
+  double Vm;
+  bool real = (f->quantity->words & WORD_REAL) != 0;
+  if (isnan (ev->settings->family[FAMILY_NONE].at.T)) {
+    return no_state (ev, f);
+  }
+  if (!family_molar_volume (ev, FAMILY_NONE, counted, real, &Vm)) {
+    return false;
+  }
+  *per = 1 / Vm;
+  return true;
+}
+
 /* Moles per unit of the figure's SI value, for the gas PART the figure counts.  */
 static bool
 moles_per_figure (struct evaluation *ev, const struct flow_figure *f, const struct stream *at,
@@ -93,17 +110,11 @@ moles_per_figure (struct evaluation *ev, const struct flow_figure *f, const stru
     *per = 1 / Vm;
     return true;
   case FLOW_ACTUAL: {
-    if (isnan (at->T) || isnan (at->p)) {
-      if (isnan (ev->settings->family[FAMILY_NONE].at.T)) {
-        return no_state (ev, f);
-      }
-      if (!family_molar_volume (ev, FAMILY_NONE, counted, real, &Vm)) {
-        return false;
-      }
-      *per = 1 / Vm;
-      return true;
+    double T = at->T, p = at->p;
+    if ((isnan (T) || isnan (p)) && !volume_fill (ev, &T, &p)) {
+      return open_moles (ev, f, counted, per);
     }
-    struct volume_question question = { counted, at->T, at->p, at->Z,
+    struct volume_question question = { counted, T, p, at->Z,
                                         (q->words & WORD_IDEAL) != 0
                                         || (f->state && f->state->ideal) };
     if (!actual_molar_volume (ev, &question, &Vm, &Z, &model)) {

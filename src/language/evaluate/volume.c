@@ -38,6 +38,24 @@ family_molar_volume (struct evaluation *ev, enum reference_family family,
   return true;
 }
 
+bool
+volume_fill (struct evaluation *ev, double *T, double *p)
+{
+  const struct conditions *at = &ev->settings->family[FAMILY_NONE].at;
+  if (isnan (at->T) || (isnan (*T) && isnan (*p))) {
+    return false;
+  }
+  if (isnan (*p)) {
+    *p = evaluation_barometer (ev);
+    evaluation_touch (ev, TOUCH_SITE);
+    assume_site_pressure (ev);
+  } else {
+    *T = at->T;
+    evaluation_touch (ev, touch_family (FAMILY_NONE));
+  }
+  return true;
+}
+
 /* Water beyond saturation would not stay in the gas: said, not taken away.  */
 static void
 note_condensation (struct evaluation *ev, const struct volume_question *q)

@@ -1,0 +1,183 @@
+#include "config.h"
+#include "language/session_private.h"
+
+#include <string.h>
+#include "result/result.h"
+#include "support/arena.h"
+#include "support/fault.h"
+#include "support/memory.h"
+#include "support/text.h"
+
+/* ---- The lines so far ---- */
+
+static void
+keep_line (struct open_block *b, const struct statement *s)
+{
+  if (b->count == b->room) {
+    b->room = b->room ? 2 * b->room : 16;
+    b->at = memory_resize (b->at, b->room, sizeof *b->at);
+    b->line = memory_resize (b->line, b->room, sizeof *b->line);
+  }
+  b->at[b->count] = s->at;
+  b->line[b->count] = arena_string (b->arena, s->source);
+  b->count++;
+}
+
+/* What a sheet is of is looked at as it is typed.  */
+static bool
+is_of_gas (struct session *session, const struct statement *s, struct fault *fault)
+{
+  struct evaluation ev;
+  struct value value;
+  evaluation_init (&ev, session, NULL, fault);
+  if (!evaluate (&ev, s->value, NULL, &value)) {
+    fault_place (fault, s->value->at);
+    return false;
+  }
+  return value.kind == VALUE_GAS || value.kind == VALUE_STREAM
+         || fault_set_at (fault, MESSAGE_KIND_WRONG, s->value->at,
+                          "a sheet is of a gas or of a stream", NULL);
+}
+
+bool
+block_open (struct session *session, const struct statement *s, struct fault *fault)
+{
+  struct open_block *b = &session->block;
+  if (b->arena) {
+    return fault_set_at (fault, MESSAGE_BLOCK_LINE, s->at, s->source,
+                         "a block is open: close it with end");
+  }
+  if (s->kind == STATEMENT_SHEET && !is_of_gas (session, s, fault)) {
+    return false;
+  }
+  *b = (struct open_block) { .arena = arena_create (),
+                             .kind = s->kind == STATEMENT_SHEET ? BLOCK_SHEET : BLOCK_BALANCE };
+  b->name = arena_string (b->arena, s->name);
+  b->name_at = s->name_at;
+  keep_line (b, s);
+  return true;
+}
+
+void
+block_drop (struct session *session)
+{
+  struct open_block *b = &session->block;
+  arena_destroy (b->arena);
+  memory_release (b->at);
+  memory_release (b->line);
+  *b = (struct open_block) { .arena = NULL };
+}
+
+/* The whole block as one source: a statement a line.  */
+static const char *
+block_source (const struct open_block *b, const struct statement *end, struct arena *arena)
+{
+  struct text source;
+  text_init (&source);
+  for (size_t i = 0; i < b->count; i++) {
+    text_add (&source, b->line[i]);
+    text_add (&source, ";\n");
+  }
+  text_add (&source, end->source);
+  const char *whole = arena_copy (arena, source.bytes, source.length);
+  text_clear (&source);
+  return whole;
+}
+
+/* ---- Faults ---- */
+
+static int
+lines_in (const char *text)
+{
+  int lines = 1;
+  for (; *text; text++) {
+    lines += *text == '\n';
+  }
+  return lines;
+}
+
+static void
+quote_line (const struct open_block *b, size_t i, struct fault *fault)
+{
+  fault_quote (fault, arena_format (fault->arena, "%*s%.*s", b->at[i].first - 1, "",
+                                    (int) strcspn (b->line[i], "\n"), b->line[i]));
+}
+
+/* A place in the source of a block is that of one of its lines, which was typed earlier and may
+   have gone on over several.                                                                    */
+void
+block_place (const struct session *session, struct fault *fault)
+{
+  const struct open_block *b = &session->block;
+  int line = fault->at.line > 0 ? fault->at.line : 1;
+  size_t i = 0;
+  while (i < b->count && line > lines_in (b->line[i])) {
+    line -= lines_in (b->line[i++]);
+  }
+  if (!b->arena || i >= b->count) {
+    return;
+  }
+  int shift = line == 1 ? b->at[i].first - 1 : 0;
+  fault->at.line = b->at[i].line + line - 1;
+  fault->at.first += shift;
+  fault->at.last += shift;
+  if (line == 1) {
+    quote_line (b, i, fault);
+  }
+}
+
+/* ---- The lines, and the end ---- */
+
+/* Would the sheet hold if it ended here?  A figure that cannot be is refused as it is typed.  */
+static bool
+holds_so_far (struct session *session, struct fault *fault)
+{
+  struct statement end = { .kind = STATEMENT_END, .source = "end" };
+  const char *source = block_source (&session->block, &end, fault->arena);
+  struct definition *d = definition_make (session, source, NAME_SHEET, fault);
+  bool done = d && definition_refresh (session, d, fault);
+  definition_release (d);
+  return done;
+}
+
+bool
+block_add (struct session *session, const struct statement *s, struct fault *fault)
+{
+  struct open_block *b = &session->block;
+  if (!b->arena) {
+    return fault_set_at (fault, MESSAGE_BLOCK_LINE, s->at, s->source, "no block is open");
+  }
+  keep_line (b, s);
+  if (b->kind == BLOCK_SHEET && !holds_so_far (session, fault)) {
+    block_place (session, fault);
+    fault_quote (fault, NULL);
+    b->count--;
+    return false;
+  }
+  return true;
+}
+
+bool
+block_close (struct session *session, const struct statement *end, struct result *result,
+             struct fault *fault)
+{
+  struct open_block *b = &session->block;
+  bool done = false;
+  if (!b->arena) {
+    return fault_set_at (fault, MESSAGE_BLOCK_LINE, end->at, end->source, "no block is open");
+  }
+  if (b->spoilt) {
+    fault_set_at (fault, MESSAGE_BLOCK_SPOILT, end->at, arena_string (fault->arena, b->name),
+                  NULL);
+  } else {
+    struct statement from = { .kind = STATEMENT_SHEET, .name = b->name, .name_at = b->name_at,
+                              .source = b->line[0], .at = b->at[0] };
+    done = name_define (session, &from, block_source (b, end, fault->arena), NAME_SHEET, result,
+                        fault);
+    if (!done && !fault->quote) {
+      quote_line (b, 0, fault);         /* the name's fault: another leans on it */
+    }
+  }
+  block_drop (session);
+  return done;
+}
