@@ -43,7 +43,8 @@ dist_demo_DATA = \
   %D%/demo/quarrel_blower.gw \
   %D%/demo/quarrel_controller.gw \
   %D%/demo/quarrel_lpg.gw \
-  %D%/demo/quarrel_permit.gw
+  %D%/demo/quarrel_permit.gw \
+  %D%/demo/week.gw
 
 # Made from the tables, in the build tree only: every table as text, the kinds of message, and
 # what stands behind each kind.

@@ -441,10 +441,14 @@ static const struct value *
 stand_in_gas (struct evaluation *ev, const struct stand_in *in)
 {
   struct value *value = ARENA_NEW (ev->arena, struct value);
-  const char *subject = ev->subject;
+  const struct evaluation before = *ev;
   ev->subject = in->definition->name;
+  ev->stand_in_count = 0;                 /* it may lean on what it stands in for */
+  ev->worked = NULL;
   bool done = evaluate (ev, in->tree, NULL, value);
-  ev->subject = subject;
+  ev->subject = before.subject;
+  ev->stand_in_count = before.stand_in_count;
+  ev->worked = before.worked;
   if (!done || value->kind != VALUE_GAS) {
     return NULL;
   }
@@ -496,6 +500,12 @@ tell (struct result *result, const struct remark *remark)
     copy->fact[2] = remark->fact[2];
     copy->fact[3] = remark->fact[3];
   }
+}
+
+void
+definition_warn (const struct definition *d, struct result *result)
+{
+  tell (result, d->cautions);
 }
 
 void

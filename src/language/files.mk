@@ -24,9 +24,11 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/commands/help.c \
   %D%/commands/list.c \
   %D%/commands/open.c \
+  %D%/commands/samples.c \
   %D%/commands/save.c \
   %D%/commands/set.c \
   %D%/commands/show.c \
+  %D%/commands/trend.c \
   %D%/commands/trim.c \
   %D%/commands/trim.h \
   %D%/commands/trim_tell.c \

@@ -296,6 +296,80 @@ file_bind (struct session *session, struct definition *d, struct statement *s,
   return done;
 }
 
+/* A remark of a single sample, unless another one had the same.  */
+static void
+add_once (struct file_samples *samples, const struct remark *remark)
+{
+  struct result *told = samples->told;
+  for (const struct remark *r = told->notes; r; r = r->next)
+    if (r->kind == remark->kind && strcmp (r->fact[1], remark->fact[1]) == 0) {
+      return;
+    }
+  result_remark (told, remark->kind, remark->fact[0], arena_string (told->arena,
+                                                                    remark->fact[1]));
+  samples->told_count++;
+}
+
+void
+file_tell_assumed (const struct evaluation *ev, struct result *result)
+{
+  for (size_t i = 0; i < ev->assumption_count; i++) {
+    const struct assumption *a = &ev->assumptions[i];
+    if (a->kind != MESSAGE_TAKEN_BELOW_DETECTION && a->kind != MESSAGE_TAKEN_PEAK) {
+      continue;
+    }
+    bool known = false;
+    for (const struct remark *r = result->taken; r && !known; r = r->next) {
+      known = r->kind == a->kind && strcmp (r->fact[0], a->fact[0]) == 0
+              && strcmp (r->fact[1], a->fact[1]) == 0;
+    }
+    if (known) {
+      continue;
+    }
+    struct arena *arena = result->arena;
+    struct remark *remark = result_remark (result, a->kind, arena_string (arena, a->fact[0]),
+                                           arena_string (arena, a->fact[1]));
+    remark->fact[2] = a->fact[2] ? arena_string (arena, a->fact[2]) : NULL;
+  }
+}
+
+bool
+file_samples (struct session *session, struct arena *arena, const char *source,
+              struct file_samples *samples, struct fault *fault)
+{
+  struct parser *parser = parser_create (arena, &session->vocabulary, source, strlen (source), 1,
+                                         BLOCK_NONE);
+  struct statement *statement;
+  if (!parser_next (parser, &statement, fault)) {
+    return false;
+  }
+  samples->statement = statement;
+  samples->typed = *statement->from_file;
+  samples->laboratory = file_analyses (session, arena, statement, fault);
+  return samples->laboratory != NULL;
+}
+
+const struct node *
+file_sample (struct session *session, struct arena *arena, struct file_samples *samples, size_t i,
+             struct fault *fault)
+{
+  enum { REMARKS_MOST = 6 };               /* of single samples, under one answer */
+  struct statement *s = samples->statement;
+  struct remark *remarks = NULL;
+  *s->from_file = samples->typed;
+  const struct node *list = file_list (session, arena, s, samples->laboratory, i, &remarks,
+                                       fault);
+  if (!list) {
+    return NULL;
+  }
+  for (; remarks && samples->told && samples->told_count < REMARKS_MOST;
+       remarks = remarks->next) {
+    add_once (samples, remarks);
+  }
+  *s->from_file = *list;
+  return s->value;
+}
+
 void
 file_tell (const struct definition *d, struct result *result)
 {

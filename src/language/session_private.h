@@ -38,6 +38,7 @@ struct definition {
   struct remark *notes, *cautions;         /* from the cache */
   bool told;                               /* its notes have stood under an answer */
   struct file_read *file;                  /* of a gas from a file: what was read; or null */
+  bool asked_over;                         /* a trend over its file has said what that holds */
 };
 
 /* One change that undo can take back; the changes of a group are taken back together.  */
@@ -108,6 +109,8 @@ const struct state *definition_state (struct evaluation *, struct definition *,
 /* Adds the notes and cautions of a definition, and of those it needs, that have not stood under
    an answer yet (ALL: even those that have).                                                    */
 void definition_tell (struct session *, struct definition *, bool all, struct result *);
+/* Its own cautions alone.  */
+void definition_warn (const struct definition *, struct result *);
 /* Cautions that follow from what is in a gas.  NAME: what it is called.  */
 void caution_gas (struct result *, const struct composition *, const char *name);
 
@@ -133,6 +136,22 @@ bool file_bind (struct session *, struct definition *, struct statement *, struc
 void file_tell_changes (struct session *, struct definition *, struct result *);
 /* What a statement's file came to, under an answer.  */
 void file_tell (const struct definition *, struct result *);
+/* All samples of a file, each of which takes the place of the list in a statement's tree.  */
+struct file_samples {
+  const struct laboratory *laboratory;
+  struct statement *statement;             /* not bound to any sample */
+  struct node typed;                       /* its list, without items */
+  struct result *told;                     /* takes what single samples have to say; or null */
+  size_t told_count;
+};
+/* Of a definition that is from a file, or (SOURCE) of the words of such a statement.  In ARENA.  */
+bool file_samples (struct session *, struct arena *, const char *source, struct file_samples *,
+                   struct fault *) MUST_CHECK;
+/* The gas of a sample, with the treatments of the statement; good until the next one.  */
+const struct node *file_sample (struct session *, struct arena *, struct file_samples *, size_t i,
+                                struct fault *) MUST_CHECK;
+/* What an evaluation assumed of a sample's own figures (below detection, peaks), each once.  */
+void file_tell_assumed (const struct evaluation *, struct result *);
 /* What was understood of a file, as remarks in ARENA.  */
 struct remark *file_remarks (struct arena *, const char *path, const struct laboratory *);
 
@@ -221,6 +240,8 @@ bool question_figures (struct evaluation *, const struct statement *, struct val
                        struct figures *) MUST_CHECK;
 /* The same question once more, under an evaluation the caller prepared.  */
 bool question_again (struct evaluation *, const struct statement *, struct figures *) MUST_CHECK;
+/* Puts what was taken into the evaluation's result, with what the usual alternatives would do.  */
+void question_tell_taken (struct evaluation *, const struct statement *, const struct figures *);
 /* Puts all there is to say of a question into the evaluation's result.  */
 bool question_answer (struct evaluation *, const struct statement *) MUST_CHECK;
 /* Runs a question: figures, uncertainties, assumptions with their effects, notes.  */

@@ -141,7 +141,8 @@ struct statement {
   const char *name;               /* what is defined, solved, shown ... */
   struct place name_at;
   const struct node *names;       /* NODE_NAMEs of forget, trim (with the ends of its range as
-                                     `a` and `b`, or null), components */
+                                     `a` and `b`, or null), components, and
+                                     of trend, where `rest` means all that begin so */
   const struct node *value;       /* the sum, list, chain or state; of normalise the whole
                                      NODE_NORMALISED; of a setting its figure */
   struct node *from_file;         /* of gas from: the NODE_LIST in `value`, without items until
@@ -156,6 +157,7 @@ struct statement {
   /* set scf at ...; the place of the value, or of the setting's name where it has none.
      setting_words is the value as it is listed: "ISO 6976:2016".  */
   const struct unit *setting_unit; struct place setting_at;
+  bool samples;                   /* show samples of: `name`, or a file as of gas from */
   /* show: all that the words can be, name, unit and property; then help's words */
   const struct unit *unit; bool has_property; enum property property;
   const char *help_words;

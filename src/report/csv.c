@@ -12,6 +12,7 @@
      whose `label` is "line" and whose `basis` is the text;
    - a check: the computed figure is a row like any; behind it one for each reading that fits, is
      ruled out, or would have to be true instead: `label` says which, `basis` what it is;
+   - a trend: a row a sample, `label` its name; behind them mean, standard deviation, median;
    - help: `what` is the topic, `label` say, get or try, `value` the text;
    - a statement that only had something to note: one row without a value.                      */
 #include "config.h"
@@ -22,6 +23,7 @@
 
 #include "result/check_verdict.h"
 #include "result/result.h"
+#include "result/trend.h"
 #include "support/number.h"
 #include "support/text.h"
 
@@ -228,6 +230,38 @@ check_add (struct frame *frame, const struct check_verdict *v)
 }
 
 static void
+number_add (struct frame *frame, const struct trend *trend, const char *label, double value)
+{
+  const struct answer a = { .what = trend->what, .label = label, .value = value,
+                            .unit = trend->unit, .uncertainty = (double) NAN,
+                            .moisture = trend->moisture, .basis = trend->basis };
+  if (isfinite (value))
+    answer_add (frame, &a);
+}
+
+static void
+trend_add (struct frame *frame, const struct trend *trend)
+{
+  for (size_t i = 0; i < trend->count; i++) {
+    const struct trend_row *r = &trend->rows[i];
+    const struct answer a = {
+      .what = trend->what, .label = r->name, .value = r->value, .unit = trend->unit,
+      .uncertainty = r->uncertainty,
+      .moisture = r->moisture != NULL ? r->moisture : trend->moisture,
+      .basis = r->why != NULL ? r->why : r->basis != NULL ? r->basis : trend->basis };
+    answer_add (frame, &a);
+  }
+  number_add (frame, trend, "mean", trend->all.mean);
+  number_add (frame, trend, "standard deviation", trend->all.standard_deviation);
+  number_add (frame, trend, "median", trend->all.median);
+  if (trend->outliers > 0) {
+    number_add (frame, trend, "mean without outliers", trend->without.mean);
+    number_add (frame, trend, "standard deviation without outliers",
+                trend->without.standard_deviation);
+  }
+}
+
+static void
 rows_add (struct frame *frame, const struct result *result)
 {
   for (const struct answer *a = result->answers; a != NULL; a = a->next)
@@ -240,9 +274,12 @@ rows_add (struct frame *frame, const struct result *result)
   }
   if (result->check != NULL)
     check_add (frame, result->check);
+  if (result->trend != NULL)
+    trend_add (frame, result->trend);
   if (result->help != NULL)
     help_page_add (frame, result->help);
-  if (result->answers == NULL && result->cards == NULL && result->help == NULL)
+  if (result->answers == NULL && result->cards == NULL && result->help == NULL
+      && result->trend == NULL)
     words_add (frame, NULL, NULL, NULL, NULL);
 }
 

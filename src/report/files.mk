@@ -19,4 +19,5 @@ noinst_LIBRARIES += %D%/libreport.a
   %D%/report.h \
   %D%/report_private.h \
   %D%/style.c \
-  %D%/text.c
+  %D%/text.c \
+  %D%/trend.c

@@ -15,6 +15,10 @@
      "ruled_out":[as readings],"needed":[{"what","value","unit","least","greatest"}]}; a value that
      nothing makes true is null.  Of a sheet it has "agreeing" and "figures":[{"name","stated",
      "value","unit","deviation","agrees","as_written"}] in place of what one figure has.
+   A trend: "trend":{"what","over","unit","rows":[{"name","value","uncertainty"?,"basis","why"?,
+     "standing"}],"all":numbers,"without_outliers"?:numbers,"grubbs"?:{"G","of","straggler_above",
+     "outlier_above"}}; numbers are {"count","mean","standard_deviation","median","least",
+     "greatest","least_of","greatest_of"}; a standing is usual, straggler or outlier.
    Help: {"title","entries":[{"say","get","try"}]}.
    A fault: {"statement","error":{"kind","message","file"?,"line","column","hint"}}; "hint" is a
    corrected line where there is one, else what was expected, else "".  A place not known is 0.
@@ -27,6 +31,7 @@
 
 #include "result/check_verdict.h"
 #include "result/result.h"
+#include "result/trend.h"
 #include "support/fault.h"
 #include "support/number.h"
 #include "support/text.h"
@@ -318,6 +323,80 @@ check_add (struct text *out, const struct check_verdict *v)
   text_add_char (out, '}');
 }
 
+static void
+figure_member (struct text *out, const char *key, double value)
+{
+  text_add (out, key);
+  number (out, value);
+}
+
+static void
+numbers_add (struct text *out, const char *key, const struct trend_numbers *n)
+{
+  text_add_format (out, "%s{\"count\":%zu", key, n->count);
+  figure_member (out, ",\"mean\":", n->mean);
+  figure_member (out, ",\"standard_deviation\":", n->standard_deviation);
+  figure_member (out, ",\"median\":", n->median);
+  figure_member (out, ",\"least\":", n->least);
+  figure_member (out, ",\"greatest\":", n->greatest);
+  member (out, ",\"least_of\":", n->least_of);
+  member (out, ",\"greatest_of\":", n->greatest_of);
+  text_add_char (out, '}');
+}
+
+static void
+basis_member (struct text *out, const char *moisture, const char *basis)
+{
+  struct text both;
+  text_init (&both);
+  text_add (&both, moisture != NULL ? moisture : "");
+  text_add (&both, moisture != NULL && basis != NULL ? ", " : "");
+  text_add (&both, basis != NULL ? basis : "");
+  member (out, ",\"basis\":", both.bytes);
+  text_clear (&both);
+}
+
+static void
+trend_row_add (struct text *out, const struct trend *trend, const struct trend_row *r)
+{
+  static const char *const standings[] = { "usual", "straggler", "outlier" };
+  member (out, "{\"name\":", r->name);
+  figure_member (out, ",\"value\":", r->value);
+  if (isfinite (r->uncertainty))
+    figure_member (out, ",\"uncertainty\":", r->uncertainty);
+  basis_member (out, r->moisture != NULL ? r->moisture : trend->moisture,
+                r->basis != NULL ? r->basis : trend->basis);
+  if (r->why != NULL)
+    member (out, ",\"why\":", r->why);
+  member (out, ",\"standing\":", standings[r->standing]);
+  text_add_char (out, '}');
+}
+
+static void
+trend_add (struct text *out, const struct trend *trend)
+{
+  member (out, ",\"trend\":{\"what\":", trend->what);
+  member (out, ",\"over\":", trend->over);
+  member (out, ",\"unit\":", trend->unit);
+  text_add (out, ",\"rows\":[");
+  for (size_t i = 0; i < trend->count; i++) {
+    text_add (out, i > 0 ? "," : "");
+    trend_row_add (out, trend, &trend->rows[i]);
+  }
+  text_add_char (out, ']');
+  numbers_add (out, ",\"all\":", &trend->all);
+  if (trend->outliers > 0)
+    numbers_add (out, ",\"without_outliers\":", &trend->without);
+  if (trend->tested) {
+    figure_member (out, ",\"grubbs\":{\"G\":", trend->G);
+    member (out, ",\"of\":", trend->tested_of);
+    figure_member (out, ",\"straggler_above\":", trend->straggler);
+    figure_member (out, ",\"outlier_above\":", trend->outlier);
+    text_add_char (out, '}');
+  }
+  text_add_char (out, '}');
+}
+
 void
 report_json (struct text *out, const struct result *result)
 {
@@ -337,6 +416,8 @@ report_json (struct text *out, const struct result *result)
     help_page_add (out, result->help);
   if (result->check != NULL)
     check_add (out, result->check);
+  if (result->trend != NULL)
+    trend_add (out, result->trend);
   remarks_add (out, ",\"taken\":", result->taken);
   remarks_add (out, ",\"notes\":", result->notes);
   remarks_add (out, ",\"cautions\":", result->cautions);

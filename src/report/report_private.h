@@ -13,6 +13,7 @@
 #include "support/text.h"
 
 struct card; struct fault; struct help_page; struct remark; struct report_origin; struct result;
+struct trend;
 
 /* Columns of the text form, counted from 0.  Columns 0 to 5 are the margin: a mark stands in
    column 2, a word of help in columns 0 to 2; all text begins in column 6.                      */
@@ -79,6 +80,7 @@ void report_json (struct text *, const struct result *);
 void report_csv (struct text *, const struct result *, bool first);
 /* The verdict of a check, with the computed figure.  */
 void report_check (struct text *, const struct report_style *, const struct result *);
+void report_trend (struct text *, const struct report_style *, const struct trend *);
 void report_card (struct text *, const struct report_style *, const struct card *);
 void report_help (struct text *, const struct report_style *, const struct help_page *);
 void report_fault_text (struct text *, const struct report_style *, const struct fault *,

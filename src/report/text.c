@@ -285,6 +285,8 @@ report_text (struct text *out, const struct report_style *style, const struct re
     answers_add (out, style, result);
   for (const struct card *c = result->cards; c != NULL; c = c->next)
     report_card (out, style, c);
+  if (result->trend != NULL)
+    report_trend (out, style, result->trend);
   if (result->help != NULL)
     report_help (out, style, result->help);
   if (result->taken != NULL)

@@ -4,4 +4,5 @@ noinst_LIBRARIES += %D%/libresult.a
   %D%/chart.h \
   %D%/check_verdict.h \
   %D%/result.c \
-  %D%/result.h
+  %D%/result.h \
+  %D%/trend.h

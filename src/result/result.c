@@ -137,7 +137,8 @@ result_is_empty (const struct result *result)
 {
   return result->answers == NULL && result->taken == NULL && result->notes == NULL
          && result->cautions == NULL && result->cards == NULL && result->help == NULL
-         && result->check == NULL && result->balance == NULL && result->workings == NULL;
+         && result->check == NULL && result->balance == NULL && result->workings == NULL
+         && result->trend == NULL;
 }
 
 /* How far a remark's alternative moves the figure; -1 sorts those without an effect last.  */

@@ -9,7 +9,8 @@
 #include <stddef.h>
 #include "support/message.h"
 
-struct arena; struct balance_verdict; struct check_verdict; struct workings_record;
+struct arena; struct balance_verdict; struct check_verdict; struct trend;
+struct workings_record;
 
 /* What the uncertainty of a figure is made of: a line for each uncertain figure that moves it, the
    largest share first.  What they contribute is independent of each other.                      */
@@ -79,6 +80,7 @@ struct result {
   const struct check_verdict *check;          /* of check; or null */
   const struct balance_verdict *balance;      /* of solve; or null */
   const struct workings_record *workings;     /* of workings; or null */
+  const struct trend *trend;                  /* of trend; or null */
   struct help_page *help;
   bool quit;
 };

@@ -28,6 +28,8 @@ noinst_LIBRARIES += %D%/libsupport.a
   %D%/search_point.c \
   %D%/search_point.h \
   %D%/search_settle.c \
+  %D%/statistics.c \
+  %D%/statistics.h \
   %D%/sum.h \
   %D%/table.c \
   %D%/table.h \

@@ -110,11 +110,13 @@ tell "$(LC_ALL=C "$awk" -v begin='```gaswright' -v end='```' -f "$here/replay.aw
   diff "$top/README.md" -)" "the sessions in README.md are what is printed"
 tell "$([ "$(grep -c '^```gaswright' "$top/README.md")" -ge 6 ] || echo "too few")" \
   "README.md has its sessions"
-tell "$(LC_ALL=C.UTF-8 "$GASWRIGHT" morning.gw > morning.out 2> morning.err || echo "exit status $?"
-  cat morning.err
-  diff "$here/morning.golden" morning.out)" "the morning at Larkmoor Works prints its answers"
-tell "$("$GASWRIGHT" --format json morning.gw > morning.json || echo "exit status $?"
-  [ -s morning.json ] || echo "nothing printed")" "the morning runs in JSON"
+for demo in morning week; do
+  tell "$(LC_ALL=C.UTF-8 "$GASWRIGHT" $demo.gw > $demo.out 2> $demo.err || echo "exit status $?"
+    cat $demo.err
+    diff "$here/$demo.golden" $demo.out)" "the $demo at Larkmoor Works prints its answers"
+  tell "$("$GASWRIGHT" --format json $demo.gw > $demo.json || echo "exit status $?"
+    [ -s $demo.json ] || echo "nothing printed")" "the $demo runs in JSON"
+done
 
 tell "$(for quarrel in "$top"/tables/demo/quarrel_*.gw; do
     cp "$quarrel" . && "$GASWRIGHT" "${quarrel##*/}" || echo "exit status $?"

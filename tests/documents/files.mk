@@ -6,5 +6,6 @@ EXTRA_DIST += \
   %D%/preamble.gw \
   %D%/quarrels.golden \
   %D%/renew.sh \
-  %D%/replay.awk
+  %D%/replay.awk \
+  %D%/week.golden
 TESTS += %D%/examples.sh

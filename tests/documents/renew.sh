@@ -27,8 +27,10 @@ LC_ALL=C "$awk" -f "$top/man/topics.awk" "$top/src/language/topics.def" "$top/ma
 cat page > "$top/man/gaswright.7"
 replay "$top/man/gaswright.7" .EX .EE -v roff=1
 replay "$top/README.md" '```gaswright' '```'
-"$GASWRIGHT" morning.gw > morning.out
-cat morning.out > "$here/morning.golden"
+for demo in morning week; do
+  "$GASWRIGHT" $demo.gw > $demo.out
+  cat $demo.out > "$here/$demo.golden"
+done
 for quarrel in "$top"/tables/demo/quarrel_*.gw; do
   cp "$quarrel" .
   "$GASWRIGHT" "${quarrel##*/}"

@@ -8,11 +8,13 @@
 #include "config.h"
 
 #include <locale.h>
+#include <math.h>
 #include <stdio.h>
 #include <string.h>
 
 #include "report/report.h"
 #include "result/result.h"
+#include "result/trend.h"
 #include "support/arena.h"
 #include "support/fault.h"
 #include "support/text.h"
@@ -74,6 +76,30 @@ build_uncertain (struct result *result)
     (*result->last_answer)->uncertainty = rows[i].uncertainty;
     result->last_answer = &(*result->last_answer)->next;
   }
+}
+
+/* A trend with an outlier, a straggler and a sample without a figure; uncertainties times two.  */
+static void
+build_trend (struct result *result)
+{
+  static const struct trend_row rows[] = {
+    { .name = "D-101", .value = 22.861, .uncertainty = 0.046 },
+    { .name = "Mon \xC2\xB5", .value = 23.0, .uncertainty = (double) NAN },
+    { .name = "D-104", .value = 20.689, .uncertainty = 0.044, .standing = TREND_OUTLIER },
+    { .name = "D-105", .value = (double) NAN, .uncertainty = (double) NAN,
+      .why = "'lab' is open: its parts add up to 99.1 mol%" },
+    { .name = "D-106", .value = 22.0, .uncertainty = 0.05, .standing = TREND_STRAGGLER,
+      .basis = "water 3 mol%" }
+  };
+  static const struct trend trend = {
+    .what = "wobbe of lab", .over = "5 samples of week.csv", .unit = "MJ/m3", .moisture = "dry",
+    .coverage = 2, .count = 5, .outliers = 1, .rows = rows,
+    .all = { 4, 22.1375, 22.4305, 1.0682, 20.689, 23.0, "D-104", "Mon \xC2\xB5" },
+    .without = { 3, 22.62, 22.861, 0.5416, 22.0, 23.0, "D-106", "Mon \xC2\xB5" },
+    .tested = true, .G = 1.145, .straggler = 1.1543, .outlier = 1.1547, .tested_of = "D-106"
+  };
+  result->statement = "trend wobbe of lab in MJ/m3";
+  result->trend = &trend;
 }
 
 /* One row a component: each says of what it is.  */
@@ -297,6 +323,7 @@ static const struct scene scenes[] = {
   { "gas-card", "text prompt weights json csv", build_gas_card, NULL },
   { "stream-card", "text json csv", build_stream_card, NULL },
   { "help-page", "text prompt json csv", build_help, NULL },
+  { "trend", "text prompt json csv", build_trend, NULL },
   { "unit", "prompt json", NULL, fail_unit },
   { "unit-in-file", "text json", NULL, fail_unit_in_file },
   { "quoted", "prompt json", NULL, fail_quoted },

@@ -4,6 +4,7 @@ same from every layout, delimiter, decimal sign and encoding.
 The files are made here.  Expected figures are sums and quotients of what stands in them.
 """
 import os
+import statistics
 import sys
 import tempfile
 
@@ -425,6 +426,132 @@ def life(tap):
     os.rename("gone.csv", "life.csv")
 
 
+# ISO 5725-2:1994, table 5: critical values of Grubbs' test, 5 % and 1 % (from memory).
+GRUBBS = {5: (1.715, 1.764), 6: (1.887, 1.973), 7: (2.020, 2.139)}
+
+
+def trend_of(things):
+    return next((thing["trend"] for thing in things if "trend" in thing), {})
+
+
+def compare(trend, values, outliers=()):
+    """What is wrong with a trend of VALUES (by name; None: no figure)."""
+    rows = {row["name"]: row for row in trend.get("rows", [])}
+    wrong = [] if list(rows) == list(values) else ["rows %s" % list(rows)]
+    for name, value in values.items():
+        row = rows.get(name, {})
+        if value is None:
+            wrong += [] if row.get("value", 0) is None and row.get("why") else [str(row)]
+        else:
+            line = session.off(row.get("value"), value, 1e-9)
+            wrong += [name + ": " + line] if line else []
+        standing = "outlier" if name in outliers else "usual"
+        wrong += [] if row.get("standing") == standing else ["%s: %s" % (name, row.get("standing"))]
+    groups = [("all", [v for v in values.values() if v is not None])]
+    if outliers:
+        groups.append(("without_outliers", [v for n, v in values.items()
+                                            if v is not None and n not in outliers]))
+    for key, group in groups:
+        got = trend.get(key, {})
+        want = {"count": len(group), "mean": statistics.mean(group),
+                "standard_deviation": statistics.stdev(group),
+                "median": statistics.median(group), "least": min(group), "greatest": max(group)}
+        wrong += ["%s %s: %s" % (key, name, line) for name, value in want.items()
+                  for line in [session.off(got.get(name), value, 1e-9)] if line]
+        if len(group) in GRUBBS and key == groups[-1][0]:
+            test = trend.get("grubbs", {})
+            for name, value in zip(("straggler_above", "outlier_above"), GRUBBS[len(group)]):
+                line = session.off(test.get(name), value, 6e-4, "abs")
+                wrong += [name + ": " + line] if line else []
+            far = max(abs(v - statistics.mean(group)) for v in group) / statistics.stdev(group)
+            line = session.off(test.get("G"), far, 1e-9)
+            wrong += ["G: " + line] if line else []
+    return wrong
+
+
+def trends(tap):
+    """Whole files and sets of gases.  CH4 of a scaled list is its share of the total."""
+    lists = {"A": (60, 39.5), "B": (61, 38.7), "C": (59.5, 40.2), "D": (60.4, 39.1),
+             "E": (50, 49.6), "F": (60.2, 39.3)}
+    text = "sample,CH4,CO2,H2S [ppm]\n" + "".join("%s,%r,%r,%s\n" % (
+        name, ch4, co2, "n/a" if name == "C" else "<5" if name == "B" else "10")
+        for name, (ch4, co2) in lists.items())
+    write("set.csv", text)
+    ppm = {name: {"C": 0, "B": 2.5e-4}.get(name, 1e-3) for name in lists}
+    share = {name: 100 * ch4 / (ch4 + co2 + ppm[name]) for name, (ch4, co2) in lists.items()}
+    gas = 'gas lab from "set.csv" sample "A" mol% normalised\n'
+    tap.tell(compare(trend_of(session.answers(gas + "trend CH4 of lab in mol%")), share, ["E"]),
+             "a trend over the samples of a file, with its outlier")
+    flow = {name: value / 100 * 10 for name, value in share.items()}
+    tap.tell(compare(trend_of(session.answers(
+        gas + "stream f = 10 kmol/h of lab\ntrend CH4 of f in kmol/h")), flow, ["E"]),
+             "a trend of a stream of that gas")
+    found = trend_of(session.answers(gas + "trend H2S of lab in ppm"))
+    h2s = {name: (None if name == "C" else ppm[name] / (ch4 + co2 + ppm[name]) * 1e6)
+           for name, (ch4, co2) in lists.items()}
+    wrong = [line for row in found.get("rows", []) if h2s[row["name"]] is not None
+             for line in [session.off(row["value"], h2s[row["name"]], 1e-9)] if line]
+    wrong += [] if {row["name"] for row in found.get("rows", []) if row["value"] is None} == {"C"} \
+        else ["what was not looked for counts"]
+    wrong += [] if found.get("all", {}).get("count") == 5 else ["count"]
+    tap.tell(wrong, "what was not looked for is no zero in a trend")
+    tap.tell([] if "H2S below 5 ppm" in said_of(session.answers(gas + "trend CH4 of lab in mol%"))
+             else ["not said"], "a limit in one of the samples is said")
+    typed = "".join("gas raw%d = CH4 %r, CO2 %r mol%%\n" % (i, *lists[name])
+                    for i, name in enumerate("ABCDF"))
+    want = {"raw%d" % i: 100 * lists[name][0] / sum(lists[name]) for i, name in enumerate("ABCDF")}
+    tap.tell(compare(trend_of(session.answers(typed + "trend CH4 of raw0 in mol% with raw*")), want),
+             "a trend over gases whose names begin so")
+    tap.tell(compare(trend_of(session.answers(
+        typed + "trend CH4 of raw3 in mol% with raw0, raw1, raw2, raw3, raw4")), want),
+             "a trend over gases by name, asked of another of them")
+    write("u.csv", "sample,CH4,u,CO2\nA,60,0.5,40\nB,60,0.2,40\n")
+    rows = trend_of(session.answers('gas lab from "u.csv" sample "A" mol%\n'
+                                    "trend CH4 of lab in mol%")).get("rows", [{}, {}])
+    wrong = []
+    for row, u in zip(rows, (0.5, 0.2)):
+        want = (100 * (60 + u) / (100 + u) - 100 * (60 - u) / (100 - u)) / 2
+        wrong += [line for line in [session.off(row.get("uncertainty"), want, 1e-9)] if line]
+    tap.tell(wrong, "each sample of a trend has its own uncertainty")
+    kinds = [(thing["error"]["kind"], thing["error"]["column"]) for thing in session.answers(
+        'gas lab from "set.csv" sample "A" mol% normalised\ngas b from "u.csv" sample "A" mol%\n'
+        "gas typed = CH4 60, CO2 40 mol%\ntrend CH4 of typed in mol%\n"
+        "trend CH4 of typed in mol% with nobody*\ntrend CH4 of typed in mol% with lab, b\n"
+        "trend lab in mol%\ntrend CH4 of nobody with typed\nshow samples of typed\n"
+        "show samples of nobody\nshow samples of \"gone.csv\"") if "error" in thing]
+    want = [("kind-wrong", 7), ("name-unknown", 33), ("kind-wrong", 7), ("kind-wrong", 7),
+            ("kind-wrong", 7), ("kind-wrong", 17), ("name-unknown", 17), ("file", 17)]
+    tap.tell([] if kinds == want else [str(kinds)], "trends of nothing are refused")
+    card = next((thing["card"] for thing in session.answers(
+        'show samples of "set.csv" mol% normalised') if "card" in thing), {})
+    rows = {row["name"]: dict(zip(card["columns"], row["values"])) for row in card.get("rows", [])}
+    wrong = [line for name in lists for line in [
+        session.off(rows[name]["CH4"], share[name], 1e-9),
+        session.off(rows[name]["total"], sum(lists[name]) + ppm[name], 1e-9)] if line]
+    wrong += [line for line in [session.off(rows["mean"]["CH4"], statistics.mean(share.values()),
+                                            1e-9),
+                                session.off(rows["s"]["CH4"], statistics.stdev(share.values()),
+                                            1e-9)] if line]
+    tap.tell(wrong, "all samples of a file in one table")
+    answers = session.answers('gas lab from "set.csv" sample "D" mol% normalised\nwobbe of lab in '
+                              "MJ/m3\ngross calorific value of lab in MJ/m3")
+    got = [a["value"] for thing in answers for a in thing.get("answers", [])]
+    tap.tell([line for name, value in zip(("wobbe", "gross"), got)
+              for line in [session.off(rows["D"][name], value, 1e-12)] if line],
+             "the table's calorific values are those of a question")
+    write("open.csv", "sample,CH4,CO2\nA,60,39.5\nB,60,39\nC,61,39\n")
+    things = session.answers('show samples of "open.csv" mol%\n')
+    rows = {row["name"]: row["values"] for row in things[0]["card"]["rows"]}
+    tap.tell([] if rows["B"] == [99, 60, 39, "open", None] and "open" not in rows["A"]
+             and abs(rows["mean"][0] - 99.75) < 1e-9 else [str(rows)],
+             "an open sample stands in the table as stated, and in no mean")
+    rows = trend_of(session.answers('gas lab from "open.csv" sample "A" mol%\n'
+                                    "trend CH4 of lab in mol%")).get("rows", [])
+    tap.tell([] if [row["value"] is None for row in rows] == [False, True, False]
+             and "99 mol%" in rows[1]["why"] else [str(rows)],
+             "an open sample has no figure in a trend, and it is said why")
+
+
 def main():
     tap = session.Tap()
     with tempfile.TemporaryDirectory() as folder:
@@ -437,6 +564,7 @@ def main():
         said(tap)
         practice(tap)
         life(tap)
+        trends(tap)
         os.chdir("/")
     return tap.finish()
 

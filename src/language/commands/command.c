@@ -51,6 +51,8 @@ command_run (struct session *session, const struct statement *s, struct result *
     return command_set (session, s, result, fault);
   case STATEMENT_SHOW:
     return command_show (session, s, result, fault);
+  case STATEMENT_TREND:
+    return command_trend (session, s, result, fault);
   case STATEMENT_LIST:
     return command_list (session, s, result, fault);
   case STATEMENT_FORGET:

@@ -70,6 +70,9 @@ command_show (struct session *session, const struct statement *s, struct result 
   const struct species *species = NULL;
   const struct reference *reference = NULL;
   const char *candidates = NULL;
+  if (s->samples) {
+    return command_samples (session, s, result, fault);
+  }
   if (d) {
     return show_definition (session, s, d, result, fault);
   }

@@ -255,6 +255,16 @@ asks_for_that (const struct node *node)
   return node && (node->kind == NODE_THAT || asks_for_that (node->a) || asks_for_that (node->b));
 }
 
+void
+question_tell_taken (struct evaluation *ev, const struct statement *s,
+                     const struct figures *figures)
+{
+  for (size_t i = 0; i < ev->assumption_count; i++) {
+    tell_assumption (ev, s, figures, &ev->assumptions[i]);
+  }
+  result_sort_taken (ev->result);
+}
+
 bool
 question_answer (struct evaluation *ev, const struct statement *s)
 {
@@ -265,10 +275,7 @@ question_answer (struct evaluation *ev, const struct statement *s)
       || !add_uncertainties (ev, s, &figures, add_answers (result, &figures))) {
     return false;
   }
-  for (size_t i = 0; i < ev->assumption_count; i++) {
-    tell_assumption (ev, s, &figures, &ev->assumptions[i]);
-  }
-  result_sort_taken (result);
+  question_tell_taken (ev, s, &figures);
   if (ev->touched & TOUCH_BELOW) {
     tell_below (ev, s, &figures);
   }

@@ -97,11 +97,33 @@ parse_sheet (struct parser *p, struct statement *statement)
   return true;
 }
 
-/* "show" ( NAME | UNIT | PROPERTY ): all of these that it can be  */
+/* "samples" "of" ( NAME | TEXT ... ), if that is what stands here  */
+static bool
+at_samples (const struct parser *p)
+{
+  struct token behind = token_behind (p);
+  return at_word (p, "samples") && token_is (p, &behind, "of");
+}
+
+static bool
+parse_samples (struct parser *p, struct statement *statement)
+{
+  const char *form = "show samples of \"file\", or show samples of NAME";
+  statement->samples = true;
+  token_take (p);
+  token_take (p);
+  if (p->token.kind == TOKEN_TEXT)
+    return parse_from_file (p, statement, false);
+  return parse_only_name (p, statement, false, form);
+}
+
+/* "show" ( NAME | UNIT | PROPERTY ): all of these that it can be; or "samples"  */
 static bool
 parse_show (struct parser *p, struct statement *statement)
 {
   const char *form = "show NAME; list shows the names";
+  if (at_samples (p))
+    return parse_samples (p, statement);
   struct unit_read read = { NULL, NULL, { 0, 0, 0 } };
   struct scanner behind;
   bool unit = unit_at (p, &p->token, &read, &behind);
@@ -124,6 +146,39 @@ parse_show (struct parser *p, struct statement *statement)
   }
   return name || (opens_unit (p, &p->token) ? parse_unit (p, &read)
                   : fail_here (p, MESSAGE_NAME_EXPECTED, form, NULL));
+}
+
+/* NAME [ "*" ] { "," NAME [ "*" ] }: with the star all names that begin so  */
+static struct node *
+parse_stars (struct parser *p)
+{
+  struct node *first = NULL, **link = &first;
+  do {
+    struct node *name = parse_name (p, "with raw1, raw2, or with raw*");
+    if (name == NULL)
+      return NULL;
+    if (p->token.kind == TOKEN_TIMES && !p->token.blank) {
+      name->rest = true;
+      token_take (p);
+    }
+    *link = name;
+    link = &name->next;
+  } while (accept_comma (p));
+  return first;
+}
+
+/* "trend" sum [ "in" target ] [ "with" NAMES ]  */
+static bool
+parse_trend (struct parser *p, struct statement *statement)
+{
+  const char *form = "trend wobbe of lab in MJ/m3, trend wobbe of raw1 with raw*";
+  if ((statement->value = parse_sum (p)) == NULL)
+    return false;
+  if (accept_word (p, "in") && (statement->targets = parse_targets (p, true)) == NULL)
+    return false;
+  if (accept_word (p, "with") && (statement->names = parse_stars (p)) == NULL)
+    return false;
+  return at_end (p) || fail_behind_sum (p, form);
 }
 
 /* "forget" NAME { "," NAME }  */
@@ -220,6 +275,7 @@ parse_opened (struct parser *p, struct statement *statement)
   case STATEMENT_SHEET: return parse_sheet (p, statement);
   case STATEMENT_CHECK: return parse_check (p, statement);
   case STATEMENT_TRIM: return parse_trim (p, statement);
+  case STATEMENT_TREND: return parse_trend (p, statement);
   case STATEMENT_SHOW: return parse_show (p, statement);
   case STATEMENT_LIST: return parse_only_name (p, statement, true, "list, or list units");
   case STATEMENT_FORGET: return parse_forget (p, statement);

@@ -438,6 +438,34 @@ print_plain (struct text *out, const char *word, const struct statement *s)
 }
 
 static void
+print_trend (struct text *out, const struct statement *s)
+{
+  text_add (out, "(trend");
+  print_each (out, s->value);
+  print_targets (out, s->targets);
+  if (s->names != NULL)
+    text_add (out, " (with");
+  for (const struct node *name = s->names; name != NULL; name = name->next)
+    text_add_format (out, " %s%s", name->text, name->rest ? "*" : "");
+  text_add (out, s->names != NULL ? "))" : ")");
+}
+
+static void
+print_samples (struct text *out, const struct statement *s)
+{
+  text_add (out, "(show (samples");
+  if (s->text != NULL)
+    text_add_format (out, " \"%s\"", s->text);
+  else
+    text_add_format (out, " %s", s->name);
+  if (s->value != NULL && s->value == s->from_file)
+    print_basis (out, s->value);
+  else if (s->value != NULL)
+    print_each (out, s->value);
+  text_add (out, "))");
+}
+
+static void
 print_normalise (struct text *out, const struct statement *s)
 {
   text_add_format (out, "(normalise %s", s->name);
@@ -497,6 +525,12 @@ tree_print (struct text *out, const struct statement *s)
     print_boundary (out, word, s);
     break;
   case STATEMENT_FIGURE: print_sheet_figure (out, s); break;
-  default: print_plain (out, word, s); break;
+  case STATEMENT_TREND: print_trend (out, s); break;
+  default:
+    if (s->samples)
+      print_samples (out, s);
+    else
+      print_plain (out, word, s);
+    break;
   }
 }
