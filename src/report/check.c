@@ -17,8 +17,11 @@
 
 /* Nobody argues about less.  */
 #define WORTH_SAYING 5e-5
+/* Figures nearer than this differ by the arithmetic alone.  */
+#define ROUNDING 1e-12
 
-enum { GAP = 3, GAP_UNIT = 2, LABEL_WIDTH = 13 };
+enum { GAP = 3, GAP_UNIT = 2, LABEL_WIDTH = 13,
+       FITS_TOO = 5 /* readings shown beside a figure that holds as written */ };
 
 /* The figures of all rows stand under each other.  */
 struct column { size_t label, whole, fraction, unit; };
@@ -158,7 +161,8 @@ outcome_add (struct text *out, const struct check_verdict *v)
 }
 
 static void
-difference_add (struct text *out, const struct report_style *style, const struct check_verdict *v)
+distance_add (struct text *out, const struct report_style *style,
+              const struct check_verdict *v)
 {
   plain_figure (out, style, fabs (v->difference));
   text_add_char (out, ' ');
@@ -168,9 +172,23 @@ difference_add (struct text *out, const struct report_style *style, const struct
     percent_add (out, v->deviation);
     text_add (out, ")");
   }
-  text_add_format (out, " %s the computed figure; good to ", v->difference < 0 ? "below" : "above");
+  text_add_format (out, " %s the computed figure", v->difference < 0 ? "below" : "above");
+}
+
+static void
+difference_add (struct text *out, const struct report_style *style, const struct check_verdict *v,
+                const struct answer *a)
+{
+  const bool uncertain = a != NULL && figure_is_uncertain (a->value, a->uncertainty);
+  if (fabs (v->difference) <= ROUNDING * fabs (v->computed))
+    text_add (out, "just the computed figure");
+  else
+    distance_add (out, style, v);
+  text_add (out, "; good to ");
   plain_figure (out, style, v->limit);
   text_add (out, v->by_digits ? " by its digits" : " by its uncertainty");
+  if (uncertain)
+    text_add (out, " and that of the computed figure");
 }
 
 /* How many figures of a sheet agree, under what, and which of them does not.  */
@@ -245,12 +263,19 @@ computed_add (struct text *out, const struct report_style *style, const struct c
 }
 
 static void
-readings_add (struct text *out, const struct report_style *style,
-              const struct check_reading *readings, const char *label,
+readings_add (struct text *out, const struct report_style *style, const struct check_verdict *v,
               const struct column *column)
 {
-  for (const struct check_reading *r = readings; r != NULL; r = r->next) {
-    row_open (out, style, column, r == readings ? label : NULL);
+  const bool holds = v->outcome == CHECK_HOLDS;
+  size_t shown = 0;
+  for (const struct check_reading *r = v->readings; r != NULL; r = r->next, shown++) {
+    row_open (out, style, column, r != v->readings ? NULL : holds ? "fits too" : "fits");
+    if (holds && shown == FITS_TOO) {
+      text_add_repeated (out, ' ', GAP);
+      text_add_format (out, "and %zu more", v->reading_count - shown);
+      line_end (out);
+      return;
+    }
     row_figure (out, style, column, r->value, r->unit);
     shown_add (out, style, r->reading);
     line_end (out);
@@ -316,14 +341,14 @@ report_check (struct text *out, const struct report_style *style, const struct r
   if (v->figures != NULL)
     agreement_add (out, style, v);
   else
-    difference_add (out, style, v);
+    difference_add (out, style, v, result->answers);
   line_end (out);
   if (v->figures != NULL) {
     sheet_add (out, style, v, &column);
     return;
   }
   computed_add (out, style, v, result->answers, &column);
-  readings_add (out, style, v->readings, v->outcome == CHECK_HOLDS ? "fits too" : "fits", &column);
+  readings_add (out, style, v, &column);
   ruled_out_add (out, style, v, &column);
   needs_add (out, style, v, &column);
 }

@@ -31,8 +31,9 @@ rounding (const struct node *claim)
     places += point && *s >= '0' && *s <= '9';
     zeros = *s == '0' ? zeros + 1 : *s == '_' ? zeros : 0;
   }
-  double half = 0.5 * pow (10, (point ? -places : zeros) + exponent);
   double cap = most * fabs (claim->number);
+  int place = point ? -places : cap > 0 ? zeros : 0;
+  double half = 0.5 * pow (10, place + exponent);
   return cap > 0 && cap < half ? cap : half;
 }
 
@@ -54,12 +55,12 @@ claim_spread (struct check *check, const struct node *claim, struct fault *fault
   if (!evaluate (&ev, claim, NULL, &value)) {
     return false;
   }
-  double moved = unit_from_si (claim->unit, value.si);
+  double moved = claim->unit ? unit_from_si (claim->unit, value.si) : value.si;
   ev.shift_count = 0;
   if (!evaluate (&ev, claim, NULL, &value)) {
     return false;
   }
-  *u = moved - unit_from_si (claim->unit, value.si);
+  *u = moved - (claim->unit ? unit_from_si (claim->unit, value.si) : value.si);
   return true;
 }
 
@@ -82,7 +83,7 @@ make_target (struct check *check, const struct statement *s, const struct node *
 {
   const struct target *said = s->targets;
   const struct node *quantity = claim->kind == NODE_AT ? claim->a : claim;
-  if (said && !unit_same_measure (said->unit, quantity->unit)) {
+  if (said && quantity->unit && !unit_same_measure (said->unit, quantity->unit)) {
     return fault_set_at (fault, MESSAGE_UNIT_MISMATCH, quantity->unit_at,
                          arena_format (check->arena, "the figure is stated in %s, and asked for "
                                        "in %s", quantity->unit_text, said->unit_text), NULL);
@@ -91,15 +92,15 @@ make_target (struct check *check, const struct statement *s, const struct node *
     check->target = *said;
   }
   check->target.unit = quantity->unit;
-  check->target.unit_text = quantity->unit_text;
-  check->target.at = quantity->unit_at;
+  check->target.unit_text = quantity->unit ? quantity->unit_text : "";
+  check->target.at = quantity->unit ? quantity->unit_at : quantity->at;
   check->target.words |= quantity->words;
   if (claim->kind == NODE_AT) {
     check->target.state = claim->b;
   }
   check->question = (struct statement) {
     .kind = STATEMENT_ASK, .source = s->source, .at = s->at, .value = s->value,
-    .targets = &check->target };
+    .targets = quantity->unit ? &check->target : NULL };
   check->claim = quantity;
   check->number = quantity->number;
   return true;
@@ -127,6 +128,9 @@ static bool
 is_bare_volume (const struct check *check)
 {
   const struct unit *u = check->target.unit;
+  if (!u) {
+    return false;                       /* of a plain number: relative density, Z */
+  }
   struct measure m = measure_of_unit (u);
   bool flow, part = check->value.kind == VALUE_PART || check->value.kind == VALUE_TRACE;
   return u->family_power == 0 && !u->actual && !check->target.state
@@ -148,7 +152,7 @@ look (struct check *check, int side, struct fault *fault)
   ev.overridden = check->base[side].overridden;
   bool done = side == SIDE_COMPUTED
                 ? evaluate (&ev, check->question.value, NULL, &check->value)
-                : convert_value (&ev, &check->value, &check->target, &subject, &figures);
+                : convert_value (&ev, &check->value, check->question.targets, &subject, &figures);
   check->touched[side] = ev.touched;
   if (side == SIDE_COMPUTED) {
     check->used = ev.used;

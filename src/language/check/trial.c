@@ -176,7 +176,8 @@ check_figure_at (struct check *check, const struct side sides[SIDES], const stru
     value = &own;
   }
   look_again (check, &sides[SIDE_STATED], check->scratch, &ev, &fault);
-  if (!convert_value (&ev, value, &check->target, &subject, &figures) || figures.count != 1) {
+  if (!convert_value (&ev, value, check->question.targets, &subject, &figures)
+      || figures.count != 1) {
     return false;
   }
   *figure = figures.at[0].value;

@@ -27,9 +27,12 @@ readings_of (struct session *session, struct fault *fault)
 static void
 note_inlet (struct check *check, struct result *result)
 {
-  struct measure m = measure_of_unit (check->target.unit);
   bool flow;
   const struct value *v = &check->value;
+  if (!check->target.unit) {
+    return;
+  }
+  struct measure m = measure_of_unit (check->target.unit);
   if (flow_basis_of (&m, &flow) == FLOW_ACTUAL && flow && v->kind == VALUE_STREAM
       && check->target.state && enhancement_is_for (v->stream.gas)
       && !(composition_fraction (v->stream.gas, check->session->water) > 0)) {
@@ -125,7 +128,7 @@ command_check (struct session *session, const struct statement *s, struct result
   bool done = check_hold (&check, session, s, s->claim, result, fault)
               && verdict (&check, readings, v, fault);
   if (done) {
-    if (v->tied > 1) {
+    if (v->tied > 1 && v->outcome == CHECK_READINGS) {
       result_remark (result, MESSAGE_NOTE_CHECK_TIE,
                      arena_format (result->arena, "%zu", v->tied), NULL);
     }
