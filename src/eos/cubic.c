@@ -249,7 +249,7 @@ cubic_roots (const void *isotherm, double p)
   const double B = line->b * p / line->RT;
   const double A = line->alpha * B;
   const struct cubic f = { B - 1, A - B * (3 * B + 2), -B * (A - B * (1 + B)) };
-  struct density_roots roots = { 0, 0 };
+  struct density_roots roots = { 0, 0, 0 };
   double large, small;
   bool lone;
 

@@ -118,6 +118,7 @@ struct search {
   const struct equation *equation;
   const void *isotherm;
   double RT, p;
+  int *steps;
 };
 
 struct value { double f, slope; };
@@ -127,6 +128,7 @@ pressure_excess (const struct search *s, double rho)
 {
   const struct residual r = s->equation->residual (s->isotherm, rho);
 
+  ++*s->steps;
   return (struct value) { .f = rho * s->RT * (1 + r.a1) - s->p,
                           .slope = s->RT * (1 + 2 * r.a1 + r.a2) };
 }
@@ -224,8 +226,9 @@ static bool
 roots_by_iteration (const struct equation *equation, const void *isotherm, double T, double p,
                     struct density_roots *roots)
 {
-  const struct search s = { equation, isotherm, equation->gas_constant * T, p };
+  const struct search s = { equation, isotherm, equation->gas_constant * T, p, &roots->steps };
 
+  roots->steps = 0;
   return gas_root (&s, &roots->gas) && dense_root (&s, roots->gas, &roots->dense);
 }
 
@@ -284,6 +287,7 @@ eos_solve_prepared (const struct eos_mixture *mixture, double T, double p,
   }
   state->equation = equation;
   state->Z = Z;
+  state->steps = roots.steps;
   state->density = roots.gas;
   state->lumped = mixture->lumped;
   state->range = equation->range != NULL ? equation->range (mixture->prepared, T, p)

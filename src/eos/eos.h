@@ -13,7 +13,7 @@
 #include <stddef.h>
 #include "support/check.h"
 
-struct arena; struct caloric; struct composition; struct fault;
+struct arena; struct caloric; struct composition; struct fault; struct workings;
 
 /* Residual Helmholtz energy a^r/(RT) at T and rho, and rho times its derivatives by rho:
    a1 = rho d(a)/d(rho), a2 = rho^2 d2(a)/d(rho)2.  So Z = 1 + a1 and
@@ -23,8 +23,9 @@ struct residual { double a, a1, a2; };
 /* The densities at which an isotherm meets a pressure.  `gas` is the smallest and `dense` the
    largest, both on rising branches; 0 where there is none.  An isotherm with a loop (a falling
    stretch) that meets p only beyond the loop has no gas root: the fluid is a liquid.  Without a
-   loop its one root is the gas root, however dense.                                             */
-struct density_roots { double gas, dense; };
+   loop its one root is the gas root, however dense.  `steps`: how many the iteration took that
+   found them; 0 for a closed form.                                                              */
+struct density_roots { double gas, dense; int steps; };
 
 /* Where a state lies in what the authors of an equation state of it.  */
 enum eos_range {
@@ -108,6 +109,7 @@ struct eos_state {
   enum eos_range range;
   double lumped;                           /* mole fraction of traces the equation lacks */
   double uncertainty;                      /* of the density, relative, k = 2; NAN: unpublished */
+  int steps;                               /* the iteration took; 0: closed form */
 };
 
 /* Z and density of the gas at T and p.  Kinds: range (T or p not positive or not finite),
@@ -119,6 +121,10 @@ struct eos_state {
    into parts of other compositions may have one root.                                          */
 bool eos_solve (const struct equation *, const struct composition *, double T, double p,
                 struct eos_state *, struct fault *) MUST_CHECK;
+
+/* The steps from GAS, T and p to Z and the density of STATE (eos_record.c).  */
+void eos_record (struct workings *, const struct composition *gas, double T, double p,
+                 const struct eos_state *);
 
 /* The same for many T and p: a composition prepared once, in the arena, which must outlive it.
    The composition is not needed afterwards.                                                    */

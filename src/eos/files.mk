@@ -16,6 +16,7 @@ noinst_LIBRARIES += %D%/libeos.a
   %D%/dew_point.h \
   %D%/eos.c \
   %D%/eos.h \
+  %D%/eos_record.c \
   %D%/gerg.c \
   %D%/gerg.h \
   %D%/gerg_table.c \

@@ -65,7 +65,7 @@ halley_step (struct helmholtz_value v, double delta, double pi)
 
 /* Without brackets, for isotherms without a loop.  */
 static bool
-root_free (const struct helmholtz_isotherm *line, double pi, double *delta)
+root_free (const struct helmholtz_isotherm *line, double pi, double *delta, int *steps)
 {
   double at = virial_start (line, pi);
 
@@ -73,6 +73,7 @@ root_free (const struct helmholtz_isotherm *line, double pi, double *delta)
     const struct helmholtz_value v = helmholtz_at (line, at);
     const double step = halley_step (v, at, pi);
 
+    *steps = i + 1;
     if (!(fabs (step) < 1 && 1 + v.a1 + v.a2 > 0)) {
       return false;
     }
@@ -98,14 +99,15 @@ node_at (const struct helmholtz_isotherm *line, double delta, double pi)
 
 /* f is below 0 at LOW and not at HIGH: steps as above, halvings where they leave the bracket.  */
 static double
-root_between (const struct helmholtz_isotherm *line, double pi, double low, double high)
+root_between (const struct helmholtz_isotherm *line, double pi, double low, double high,
+              int *steps)
 {
   double at = virial_start (line, pi);
 
   if (!(at > low && at < high)) {
     at = 0.5 * (low + high);
   }
-  for (int i = 0; i < STEPS_BOUND; i++) {
+  for (int i = 0; i < STEPS_BOUND; i++, ++*steps) {
     const struct helmholtz_value v = helmholtz_at (line, at);
     const double step = halley_step (v, at, pi);
     double next = at * exp (step);
@@ -184,7 +186,7 @@ walk_to (const struct helmholtz_isotherm *line, double pi, struct node next, str
   }
   if ((walk->last.slope > 0 || next.slope > 0) && from.f < 0 && to.f >= 0) {
     *(walk->fell ? &walk->roots.dense : &walk->roots.gas)
-      = root_between (line, pi, from.delta, to.delta);
+      = root_between (line, pi, from.delta, to.delta, &walk->roots.steps);
   }
   walk->fell = walk->fell || !(next.slope > 0);
   walk->last = next;
@@ -216,10 +218,10 @@ helmholtz_roots (const void *isotherm, double p)
 {
   const struct helmholtz_isotherm *line = isotherm;
   const double pi = p / (line->rho_r * line->RT);
-  struct density_roots roots = { 0, 0 };
+  struct density_roots roots = { 0, 0, 0 };
   double delta;
 
-  if (!line->may_loop && root_free (line, pi, &delta)) {
+  if (!line->may_loop && root_free (line, pi, &delta, &roots.steps)) {
     roots.gas = delta * line->rho_r;
     return roots;
   }

@@ -5,6 +5,7 @@
 #include <stdio.h>
 #include "support/fault.h"
 #include "units/constants.h"
+#include "units/workings.h"
 
 /* IAPWS SR1-86(1992), section 2: reference constants, K and Pa.  */
 static const double T_critical = 647.096, p_critical = 22.064e6;
@@ -13,6 +14,13 @@ static const double T_triple = 273.16, p_triple = 611.657;
 /* Ends of the ranges, K: -50 degC is where the supercooled liquid still follows the equation
    within half a per cent of Hardy (1998); 50 K is the end of R14-08.                            */
 static const double T_liquid_least = 223.15, T_ice_least = 50;
+
+/* Coefficients and exponents of the two curves below.  */
+static const double liquid_a[6] = { -7.85951783, 1.84408259, -11.7866497, 22.6807411, -15.9618719,
+                                    1.80122502 };
+static const double liquid_b[6] = { 1, 1.5, 3, 3.5, 4, 7.5 };
+static const double ice_a[3] = { -0.212144006e2, 0.273203819e2, -0.610598130e1 };
+static const double ice_b[3] = { 0.333333333e-2, 0.120666667e1, 0.170333333e1 };
 
 /* ln(p) and its derivative by T.  */
 struct curve { double ln_p, slope; };
@@ -24,8 +32,8 @@ struct curve { double ln_p, slope; };
 static struct curve
 liquid_curve (double T)
 {
-  static const double a1 = -7.85951783, a2 = 1.84408259, a3 = -11.7866497, a4 = 22.6807411,
-    a5 = -15.9618719, a6 = 1.80122502;
+  const double a1 = liquid_a[0], a2 = liquid_a[1], a3 = liquid_a[2], a4 = liquid_a[3],
+    a5 = liquid_a[4], a6 = liquid_a[5];
   double tau = 1 - T / T_critical;
   double root = sqrt (tau);
   double tau2 = tau * tau, tau3 = tau2 * tau, tau6 = tau3 * tau3;
@@ -43,8 +51,7 @@ liquid_curve (double T)
 static struct curve
 ice_curve (double T)
 {
-  static const double a[3] = { -0.212144006e2, 0.273203819e2, -0.610598130e1 };
-  static const double b[3] = { 0.333333333e-2, 0.120666667e1, 0.170333333e1 };
+  const double *a = ice_a, *b = ice_b;
   double theta = T / T_triple;
   double sum = 0, rise = 0;
   for (int i = 0; i < 3; i++) {
@@ -146,4 +153,32 @@ water_dew_point (double p, double *T, enum water_phase *phase, struct fault *fau
   *T = found;
   *phase = p < p_triple ? WATER_ICE : WATER_LIQUID;
   return true;
+}
+
+void
+water_pressure_record (struct workings *workings, double T, double psat, enum water_phase phase)
+{
+  static const char liquid_source[] = "IAPWS SR1-86(1992), eq. 1 (Wagner and Pruss 1993)";
+  static const char ice_source[] = "IAPWS R14-08(2011), eq. 6";
+  static const char *const terms[] = { "1", "2", "3", "4", "5", "6" };
+  if (workings == NULL)
+    return;
+  if (phase == WATER_ICE)
+    workings_add (workings, &(struct step) {
+        .name = "vapour pressure of ice",
+        .formula = "psat = p_t exp(T_t/T sum(a_i (T/T_t)^b_i))", .value = psat, .unit = "Pa",
+        .source = ice_source, .term_count = 3, .terms = terms,
+        STEP_SYMBOLS (SYMBOL ("T", T, "K"), CONSTANT ("T_t", T_triple, "K", ice_source),
+                      CONSTANT ("p_t", p_triple, "Pa", ice_source)),
+        STEP_COLUMNS ({ "a_i", ice_a, NULL, ice_source, NULL },
+                      { "b_i", ice_b, NULL, ice_source, NULL }) });
+  else
+    workings_add (workings, &(struct step) {
+        .name = "vapour pressure of liquid water",
+        .formula = "psat = p_c exp(T_c/T sum(a_i (1 - T/T_c)^b_i))", .value = psat, .unit = "Pa",
+        .source = liquid_source, .term_count = 6, .terms = terms,
+        STEP_SYMBOLS (SYMBOL ("T", T, "K"), CONSTANT ("T_c", T_critical, "K", liquid_source),
+                      CONSTANT ("p_c", p_critical, "Pa", liquid_source)),
+        STEP_COLUMNS ({ "a_i", liquid_a, NULL, liquid_source, NULL },
+                      { "b_i", liquid_b, NULL, liquid_source, NULL }) });
 }

@@ -8,7 +8,7 @@
 #include <stdbool.h>
 #include "support/check.h"
 
-struct fault;
+struct fault; struct workings;
 
 enum water_phase { WATER_LIQUID, WATER_ICE };
 
@@ -21,5 +21,8 @@ bool water_pressure_ice (double T, double *p, struct fault *) MUST_CHECK;
 bool water_pressure (double T, double *p, enum water_phase *phase, struct fault *) MUST_CHECK;
 /* The temperature at which water_pressure gives P (dew point, or frost point).  */
 bool water_dew_point (double p, double *T, enum water_phase *phase, struct fault *) MUST_CHECK;
+
+/* The step that gave PSAT at T over PHASE.  */
+void water_pressure_record (struct workings *, double T, double psat, enum water_phase);
 
 #endif

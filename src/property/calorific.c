@@ -361,6 +361,10 @@ fill (const struct frame *f, const struct totals *t, struct calorific *found, st
   double gross = t->sum[SUM_G], net = gross - t->sum[SUM_W] / 2 * f->L;
   bool stated = f->ask->edition == CALORIFIC_2016;
   found->origins = t->origins;
+  found->G = gross;
+  found->W = t->sum[SUM_W];
+  found->M = t->sum[SUM_M];
+  found->S = t->sum[SUM_S];
   for (size_t i = 0; i < CALORIFIC_FIGURES; i++) {
     const struct shape *shape = &shapes[i];
     double Q = factor[i] * (shape->gross ? gross : shape->net ? net : 1), u = 0;
@@ -385,6 +389,7 @@ calorific_compute (const struct calorific_tables *tables, const struct compositi
   if (!make_frame (tables, gas, ask, &f, fault) || !add_up (&f, &t, fault)
       || !fill (&f, &t, &made, fault))
     return false;
+  calorific_record (tables, gas, ask, &made);
   *found = made;
   return true;
 }

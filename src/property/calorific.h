@@ -15,7 +15,7 @@
 #include <stdbool.h>
 #include "support/check.h"
 
-struct calorific_tables; struct composition; struct fault; struct species;
+struct calorific_tables; struct composition; struct fault; struct species; struct workings;
 
 enum calorific_edition { CALORIFIC_2016, CALORIFIC_1995, CALORIFIC_EDITIONS };
 
@@ -58,6 +58,8 @@ struct calorific_question {
   const double *u;            /* standard uncertainties of the fractions, in their order; null: 0 */
   const double *correlation;  /* of the fractions with each other, row by row; null: none */
   struct calorific_moves moves;
+  struct workings *workings;  /* where the steps to the figure WANTED go; null: nowhere */
+  int wanted;                 /* enum calorific_figure */
 };
 
 /* Units J/mol, J/kg, J/m3, kg/m3, 1, J/m3, 1, kg/mol, m3/mol.  */
@@ -79,7 +81,10 @@ enum calorific_origin {
   CALORIFIC_ORIGINS
 };
 
+/* The sums over the composition that every figure follows from: J/mol, atoms of hydrogen, kg/mol,
+   and that of the summation factors.                                                            */
 struct calorific {
+  double G, W, M, S;
   double value[CALORIFIC_FIGURES];
   double u[CALORIFIC_FIGURES];           /* standard uncertainties; NAN for 1995, which has none */
   unsigned origins;                      /* 1 << origin, for all that the gas holds */

@@ -155,6 +155,7 @@ read_component (const struct formation *f, const struct products *products, size
   if (isnan (Hf))
     return table_complain (f->table, i, "no enthalpy of formation", fault);
   row.origin = CALORIFIC_NO_FUEL;
+  row.source = table_cell (f->table, i, table_column (f->table, "source"));
   if (oxygen_needed (to->atoms) > 0) {
     row.u_H = isnan (u) ? UNSTATED_U : u * 1e3;
     if (!burn (f, products, table_cell (f->table, i, 0), Hf * 1e3, to->atoms, &row, fault))

@@ -18,6 +18,7 @@ struct calorific_row {
   double H[COMBUSTIONS], u_H;            /* gross, J/mol */
   double s[METERINGS], u_s;              /* summation factor; NAN outside the standard */
   enum calorific_origin origin;
+  const char *source;                    /* of the calorific value */
 };
 
 struct calorific_component {
@@ -56,6 +57,10 @@ bool calorific_read_formation (struct calorific_tables *, const char *directory,
                                struct fault *) MUST_CHECK;
 /* The component of that key, made if need be.  */
 struct calorific_component *calorific_component_of (struct calorific_tables *, const char *key);
+
+/* The steps from the sums to the figure WANTED of a question.  */
+void calorific_record (const struct calorific_tables *, const struct composition *,
+                       const struct calorific_question *, const struct calorific *);
 
 /* Summation factor of a component outside the standard at T, root of -B p0/(RT), with the sign of
    -B, B by corresponding states; *U is its standard uncertainty.  False without critical

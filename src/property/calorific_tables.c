@@ -88,6 +88,7 @@ read_row (const struct table *table, size_t i, const struct row_columns *column,
     if (!read_figure (table, i, column->s[k], 1, &row->s[k], fault))
       return false;
   row->origin = CALORIFIC_STANDARD;
+  row->source = table_cell (table, i, table_column (table, "source"));
   return true;
 }
 

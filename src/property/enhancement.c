@@ -7,6 +7,7 @@
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "units/constants.h"
+#include "units/workings.h"
 
 /* Greenspan (1976): ln f = alpha (1 - psat/p) + beta (p/psat - 1), alpha = sum A_i t^(i-1),
    beta = exp (sum B_i t^(i-1)), t in degC.  The coefficients are those for use with the vapour
@@ -34,6 +35,12 @@ cubic (const double c[4], double t)
   return c[0] + t * (c[1] + t * (c[2] + t * c[3]));
 }
 
+static const struct coefficients *
+coefficients_for (double t, enum water_phase phase)
+{
+  return phase == WATER_ICE ? &ice : t < 0 ? &supercooled : &water;
+}
+
 enum enhancement
 enhancement_factor (double T, double p, double psat, enum water_phase phase, double *factor)
 {
@@ -44,9 +51,30 @@ enhancement_factor (double T, double p, double psat, enum water_phase phase, dou
     return ENHANCEMENT_BEYOND_T;
   if (!(p >= psat && p <= ENHANCEMENT_P_HIGHEST * (1 + 1e-9)))
     return ENHANCEMENT_BEYOND_P;
-  const struct coefficients *c = phase == WATER_ICE ? &ice : t < 0 ? &supercooled : &water;
+  const struct coefficients *c = coefficients_for (t, phase);
   *factor = exp (cubic (c->A, t) * (1 - psat / p) + exp (cubic (c->B, t)) * (p / psat - 1));
   return ENHANCEMENT_APPLIED;
+}
+
+void
+enhancement_record (struct workings *workings, double T, double p, double psat,
+                    enum water_phase phase, double factor)
+{
+  static const char source[] = "L. Greenspan, J. Res. NBS 80A (1976) 41; coefficients of B. Hardy, "
+                               "Proc. 3rd Int. Symp. on Humidity and Moisture (1998)";
+  static const char *const terms[] = { "1", "2", "3", "4" };
+  static const double powers[4] = { 0, 1, 2, 3 };
+  if (workings == NULL)
+    return;
+  const double t = T - ICE_POINT;
+  const struct coefficients *c = coefficients_for (t, phase);
+  workings_add (workings, &(struct step) {
+      .name = "enhancement factor",
+      .formula = "f = exp(sum(A_i t^k_i) (1 - psat/p) + exp(sum(B_i t^k_i)) (p/psat - 1))",
+      .value = factor, .unit = "1", .source = source, .term_count = 4, .terms = terms,
+      STEP_SYMBOLS (SYMBOL ("t", t, "degC"), SYMBOL ("psat", psat, "Pa"), SYMBOL ("p", p, "Pa")),
+      STEP_COLUMNS ({ "A_i", c->A, NULL, source, NULL }, { "B_i", c->B, NULL, source, NULL },
+                    { "k_i", powers, NULL, source, NULL }) });
 }
 
 /* Air without water: 78.1 % N2, 20.9 % O2, 0.9 % Ar (U.S. Standard Atmosphere, 1976, Table 3).

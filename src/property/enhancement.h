@@ -9,7 +9,7 @@
 #include <stdbool.h>
 #include "gas/moisture.h"
 
-struct composition;
+struct composition; struct workings;
 
 /* Ends of the range, K and Pa.  */
 #define ENHANCEMENT_T_LOWEST 223.15
@@ -27,6 +27,10 @@ enum enhancement {
    water is supercooled, with coefficients of its own.  *FACTOR is 1 unless it is applied.       */
 enum enhancement enhancement_factor (double T, double p, double psat, enum water_phase phase,
                                      double *factor);
+
+/* The step that gave FACTOR.  */
+void enhancement_record (struct workings *, double T, double p, double psat, enum water_phase,
+                         double factor);
 
 /* Is the gas, its water aside, air closely enough: N2 and O2 within a percentage point of those
    of air, and no more than 0.1 % that is neither these nor argon?                               */

@@ -6,6 +6,7 @@ noinst_LIBRARIES += %D%/libproperty.a
   %D%/calorific_doubt.c \
   %D%/calorific_formation.c \
   %D%/calorific_private.h \
+  %D%/calorific_record.c \
   %D%/calorific_tables.c \
   %D%/enhancement.c \
   %D%/enhancement.h \

@@ -5,6 +5,7 @@
 #include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "support/arena.h"
 #include "support/fault.h"
 #include "support/sum.h"
 #include "units/workings.h"
@@ -165,28 +166,94 @@ find_limits (const struct tally *t, struct flammability *f)
   f->burns_as_it_is = enough && oxidisers > 0 && !too_rich;
 }
 
+static bool
+is_stated (const struct species *species, const struct flammable_limits stated[], size_t n)
+{
+  for (size_t i = 0; i < n; i++)
+    if (stated[i].species == species)
+      return true;
+  return false;
+}
+
+/* The fuels and their limits.  */
+struct fuels { size_t count; const char **terms, **sources; double *x, *lower, *upper, *oxygen; };
+
+static struct fuels
+fuels_of (struct arena *arena, const struct composition *gas,
+          const struct flammable_limits stated[], size_t n)
+{
+  struct fuels f = { 0, ARENA_ARRAY (arena, gas->count, const char *),
+                     ARENA_ARRAY (arena, gas->count, const char *),
+                     ARENA_ARRAY (arena, gas->count, double),
+                     ARENA_ARRAY (arena, gas->count, double),
+                     ARENA_ARRAY (arena, gas->count, double),
+                     ARENA_ARRAY (arena, gas->count, double) };
+  for (size_t i = 0; i < gas->count; i++) {
+    const struct species *species = gas->species[i];
+    struct flammable_limits limits = limits_of (species, stated, n);
+    if (!(gas->fraction[i] > 0) || role_of (species, limits.lower) != ROLE_FUEL)
+      continue;
+    f.terms[f.count] = species->key;
+    bool from_table = *species->flammable_source != '\0' && !is_stated (species, stated, n);
+    f.sources[f.count] = from_table ? species->flammable_source : STEP_TYPED;
+    f.x[f.count] = gas->fraction[i];
+    f.lower[f.count] = limits.lower;
+    f.upper[f.count] = limits.upper;
+    f.oxygen[f.count++] = oxygen_needed (species);
+  }
+  return f;
+}
+
 static void
-record (struct workings *workings, const struct flammability *f)
+record_gas (struct workings *workings, const struct flammability *f)
+{
+  static const char inert[] = "inert parts counted as air: common practice, no source";
+  if (!isnan (f->lower))
+    workings_add (workings, &(struct step) {
+        .name = "lower limit of the gas in air", .formula = "L = L_F/F", .value = f->lower,
+        .unit = "mol/mol", .source = inert,
+        STEP_SYMBOLS (SYMBOL ("L_F", f->fuel_lower, "mol/mol"), SYMBOL ("F", f->fuel, "mol/mol"))
+      });
+  if (!isnan (f->upper))
+    workings_add (workings, &(struct step) {
+        .name = "upper limit of the gas in air", .formula = "U = min(U_F/F, 1)",
+        .value = f->upper, .unit = "mol/mol", .source = inert,
+        STEP_SYMBOLS (SYMBOL ("U_F", f->fuel_upper, "mol/mol"), SYMBOL ("F", f->fuel, "mol/mol"))
+      });
+}
+
+static void
+record (struct workings *workings, const struct composition *gas,
+        const struct flammable_limits stated[], size_t n, const struct flammability *f)
 {
   static const char rule[] = "H. Le Chatelier, Annales des Mines (8) 19 (1891) 388";
-  static const char inert[] = "inert parts counted as air: common practice, no source";
-  if (f->kind == FLAMMABLE_NOTHING)
+  if (workings == NULL || f->kind == FLAMMABLE_NOTHING)
     return;
-  workings_add (workings, "fuel in the gas", "F = sum x_i of what burns", f->fuel, "mol/mol", rule);
-  workings_add (workings, "lower limit of the fuels", "L_F = F/sum(x_i/L_i)", f->fuel_lower,
-                "mol/mol", rule);
+  const struct fuels fuels = fuels_of (workings->arena, gas, stated, n);
+  const struct step_column x = { "x_i", fuels.x, "mol/mol", NULL, NULL };
+  workings_add (workings, &(struct step) {
+      .name = "fuel in the gas", .formula = "F = sum(x_i)", .value = f->fuel, .unit = "mol/mol",
+      .source = rule, .term_count = (unsigned) fuels.count, .terms = fuels.terms, STEP_COLUMNS (x) });
+  workings_add (workings, &(struct step) {
+      .name = "lower limit of the fuels", .formula = "L_F = F/sum(x_i/L_i)",
+      .value = f->fuel_lower, .unit = "mol/mol", .source = rule, .term_count = (unsigned) fuels.count,
+      .terms = fuels.terms, STEP_SYMBOLS (SYMBOL ("F", f->fuel, "mol/mol")),
+      STEP_COLUMNS (x, { "L_i", fuels.lower, "mol/mol", NULL, fuels.sources }) });
   if (!isnan (f->fuel_upper))
-    workings_add (workings, "upper limit of the fuels", "U_F = F/sum(x_i/U_i)", f->fuel_upper,
-                  "mol/mol", rule);
-  if (!isnan (f->lower))
-    workings_add (workings, "lower limit of the gas in air", "L = L_F/F", f->lower, "mol/mol",
-                  inert);
-  if (!isnan (f->upper))
-    workings_add (workings, "upper limit of the gas in air", "U = U_F/F, at most 1", f->upper,
-                  "mol/mol", inert);
+    workings_add (workings, &(struct step) {
+        .name = "upper limit of the fuels", .formula = "U_F = F/sum(x_i/U_i)",
+        .value = f->fuel_upper, .unit = "mol/mol", .source = rule, .term_count = (unsigned) fuels.count,
+        .terms = fuels.terms, STEP_SYMBOLS (SYMBOL ("F", f->fuel, "mol/mol")),
+        STEP_COLUMNS (x, { "U_i", fuels.upper, "mol/mol", NULL, fuels.sources }) });
   if (!isnan (f->least_oxygen))
-    workings_add (workings, "least oxygen", "L_F times the oxygen a mol of the fuels burns with",
-                  f->least_oxygen, "mol/mol", "estimate, common practice, no source");
+    workings_add (workings, &(struct step) {
+        .name = "least oxygen", .formula = "O = L_F sum(x_i o_i)/F", .value = f->least_oxygen,
+        .unit = "mol/mol", .source = "estimate, common practice, no source",
+        .term_count = (unsigned) fuels.count, .terms = fuels.terms,
+        STEP_SYMBOLS (SYMBOL ("L_F", f->fuel_lower, "mol/mol"), SYMBOL ("F", f->fuel, "mol/mol")),
+        STEP_COLUMNS (x, { "o_i", fuels.oxygen, "mol/mol", "burnt to CO2, H2O, N2 and SO2", NULL })
+      });
+  record_gas (workings, f);
 }
 
 bool
@@ -219,7 +286,7 @@ flammability_of (const struct composition *gas, const struct flammable_limits st
   }
   if (f.fuel > 0)
     find_limits (&t, &f);
-  record (workings, &f);
+  record (workings, gas, stated, n, &f);
   *flammability = f;
   return true;
 }

@@ -7,6 +7,7 @@
 #include "gas/species.h"
 #include "property/figures.h"
 #include "property/property_tables.h"
+#include "support/arena.h"
 #include "support/fault.h"
 #include "support/sum.h"
 #include "units/constants.h"
@@ -45,13 +46,32 @@ heat_at (const double figure[], double T)
   return heat;
 }
 
+/* The heat capacity, part by part.  */
 static void
-record (struct workings *workings, const struct ideal_heat *heat)
+record (struct workings *workings, const struct figures *figures, const struct composition *gas,
+        double T, double cp)
 {
-  static const char source[] = "A. Einstein, Ann. Phys. 327 (1907) 180; cp_ideal.tsv";
-  workings_add (workings, "ideal heat capacity",
-                "cp = R sum x_i (c0 + sum v_k u^2 e^u/(e^u - 1)^2), u = theta_k/T", heat->cp,
-                "J/(mol K)", source);
+  static const char method[] = "A. Einstein, Ann. Phys. 327 (1907) 180; tables/cp_ideal.tsv";
+  if (workings == NULL)
+    return;
+  const size_t n = gas->count;
+  double *C = ARENA_ARRAY (workings->arena, n, double);
+  const char **terms = ARENA_ARRAY (workings->arena, n, const char *);
+  const char **sources = ARENA_ARRAY (workings->arena, n, const char *);
+  for (size_t i = 0; i < n; i++) {
+    const struct figures_row *row = figures_of (figures, gas->species[i]);
+    terms[i] = gas->species[i]->key;
+    if (row == NULL)
+      continue;                          /* there is none of it */
+    C[i] = GAS_CONSTANT * heat_at (row->value, T).cp;
+    sources[i] = row->source;
+  }
+  workings_add (workings, &(struct step) {
+      .name = "heat capacity of the ideal gas", .formula = "c_p = sum(x_i C_i)", .value = cp,
+      .unit = "J/(mol K)", .source = method, .term_count = (unsigned) n, .terms = terms,
+      STEP_SYMBOLS (STEP_R, SYMBOL ("T", T, "K")),
+      STEP_COLUMNS ({ "x_i", gas->fraction, "mol/mol", NULL, NULL },
+                    { "C_i", C, "J/(mol K)", NULL, sources }) });
 }
 
 /* Range and figures of one part with the share X, added to those of the gas.  */
@@ -97,7 +117,7 @@ heat_of_gas (struct property_tables *tables, const struct composition *gas, doub
   found.entropy = GAS_CONSTANT * sum_total (&entropy);
   if (!(isfinite (found.cp) && isfinite (found.enthalpy) && isfinite (found.entropy)))
     return fault_set (fault, MESSAGE_NOT_FINITE, NULL, NULL);
-  record (workings, &found);
+  record (workings, figures, gas, T, found.cp);
   *heat = found;
   return true;
 }

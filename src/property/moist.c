@@ -7,8 +7,6 @@
 #include "support/fault.h"
 #include "units/workings.h"
 
-static const char liquid_source[] = "IAPWS SR1-86(1992), eq. 1 (Wagner and Pruss 1993)";
-static const char ice_source[] = "IAPWS R14-08(2011), eq. 6";
 static const char ideal_source[] = "Dalton and Raoult, ideal, no enhancement factor";
 static const char factor_source[] = "L. Greenspan, J. Res. NBS 80A (1976) 41";
 
@@ -61,31 +59,36 @@ saturate (const struct moist_question *q, double T, bool liquid, struct moist_an
 }
 
 static void
-record_factor (struct workings *workings, const struct moist_answer *a)
+record_saturation (struct workings *workings, const struct moist_question *q, double T,
+                   const struct moist_answer *a)
 {
+  water_pressure_record (workings, T, a->psat, a->phase);
   if (a->applied == ENHANCEMENT_APPLIED)
-    workings_add (workings, "enhancement factor",
-                  "ln f = alpha (1 - psat/p) + beta (p/psat - 1)", a->factor, "1", factor_source);
+    enhancement_record (workings, T, q->p, a->psat, a->phase, a->factor);
 }
 
 static void
-record_saturation (struct workings *workings, const struct moist_answer *a)
+record_share (struct workings *workings, const struct moist_question *q, double phi,
+              const struct moist_answer *a)
 {
-  bool ice = a->phase == WATER_ICE;
-  workings_add (workings, ice ? "vapour pressure of ice" : "vapour pressure of liquid water",
-                ice ? "psat = pt exp(sum a_i theta^b_i/theta), theta = T/Tt"
-                : "psat = pc exp(Tc/T sum a_i tau^b_i), tau = 1 - T/Tc",
-                a->psat, "Pa", ice ? ice_source : liquid_source);
-  record_factor (workings, a);
+  bool enhanced = a->applied == ENHANCEMENT_APPLIED, humid = q->asked == MOIST_BY_HUMIDITY;
+  if (workings == NULL)
+    return;
+  workings_add (workings, &(struct step) {
+      .name = "share of water",
+      .formula = enhanced ? humid ? "y = phi f psat/p" : "y = f psat/p"
+                 : humid ? "y = phi psat/p" : "y = psat/p",
+      .value = a->value, .unit = "mol/mol", .source = enhanced ? factor_source : ideal_source,
+      STEP_SYMBOLS (SYMBOL ("psat", a->psat, "Pa"), SYMBOL ("p", q->p, "Pa"),
+                    SYMBOL ("f", a->factor, "1"), SYMBOL ("phi", phi, "1")) });
 }
 
 /* The mole fraction at PHI of saturation, which is in A.  */
 static bool
 share_at (const struct moist_question *q, double phi, struct moist_answer *a,
-          struct workings *workings, struct fault *fault)
+          struct fault *fault)
 {
   double p_water = phi * a->factor * a->psat;
-  bool enhanced = a->applied == ENHANCEMENT_APPLIED, humid = q->asked == MOIST_BY_HUMIDITY;
   char what[160];
   if (!(p_water / q->p < 1)) {
     snprintf (what, sizeof what, "the water alone would have %.6g kPa, the gas has only %.6g kPa",
@@ -93,10 +96,6 @@ share_at (const struct moist_question *q, double phi, struct moist_answer *a,
     return fault_set (fault, MESSAGE_RANGE, what, "state a higher pressure or less water");
   }
   a->value = p_water / q->p;
-  record_saturation (workings, a);
-  workings_add (workings, "water", enhanced ? humid ? "y = phi f psat/p" : "y = f psat/p"
-                : humid ? "y = phi psat/p" : "y = psat/p",
-                a->value, "mol/mol", enhanced ? factor_source : ideal_source);
   return true;
 }
 
@@ -111,7 +110,26 @@ answer_share (const struct moist_question *q, struct moist_answer *a, struct wor
   if ((humid && !check_humidity (q->given, fault)) || !check_pressure (q->p, fault)
       || !saturate (q, T, humid, a, fault))
     return false;
-  return share_at (q, humid ? q->given : 1, a, workings, fault);
+  if (!share_at (q, humid ? q->given : 1, a, fault))
+    return false;
+  record_saturation (workings, q, T, a);
+  record_share (workings, q, humid ? q->given : 1, a);
+  return true;
+}
+
+static void
+record_humidity (struct workings *workings, const struct moist_question *q,
+                 const struct moist_answer *a)
+{
+  if (workings == NULL)
+    return;
+  workings_add (workings, &(struct step) {
+      .name = "relative humidity",
+      .formula = a->applied == ENHANCEMENT_APPLIED ? "phi = y p/(f psat)" : "phi = y p/psat",
+      .value = a->value, .unit = "1",
+      .source = "World Meteorological Organization, WMO-No. 8, annex 4.A: over liquid water",
+      STEP_SYMBOLS (SYMBOL ("y", q->given, "mol/mol"), SYMBOL ("p", q->p, "Pa"),
+                    SYMBOL ("psat", a->psat, "Pa"), SYMBOL ("f", a->factor, "1")) });
 }
 
 static bool
@@ -122,11 +140,8 @@ answer_humidity (const struct moist_question *q, struct moist_answer *a,
       || !saturate (q, q->T, true, a, fault))
     return false;
   a->value = q->given * q->p / (a->factor * a->psat);
-  record_saturation (workings, a);
-  workings_add (workings, "relative humidity",
-                a->applied == ENHANCEMENT_APPLIED ? "phi = y p/(f psat)" : "phi = y p/psat",
-                a->value, "1",
-                "World Meteorological Organization, WMO-No. 8, annex 4.A: over liquid water");
+  record_saturation (workings, q, q->T, a);
+  record_humidity (workings, q, a);
   return true;
 }
 
@@ -162,6 +177,29 @@ refine_dew_point (const struct moist_question *q, double p_water, struct moist_a
   return true;
 }
 
+/* The vapour pressure is worked out again at the dew point, so that the step can be followed: there
+   it is the one looked for.                                                                     */
+static void
+record_dew_point (struct workings *workings, const struct moist_question *q, double p_water,
+                  const struct moist_answer *a)
+{
+  bool ice = a->phase == WATER_ICE, enhanced = a->applied == ENHANCEMENT_APPLIED;
+  if (workings == NULL)
+    return;
+  workings_add (workings, &(struct step) {
+      .name = "partial pressure of water", .formula = "p_w = y p", .value = p_water, .unit = "Pa",
+      .source = enhanced ? factor_source : ideal_source,
+      STEP_SYMBOLS (SYMBOL ("y", q->given, "mol/mol"), SYMBOL ("p", q->p, "Pa")) });
+  workings_add (workings, &(struct step) {
+      .name = ice ? "frost point" : "dew point",
+      .formula = enhanced ? "f psat = p_w" : "psat = p_w",
+      .solved = "Newton's steps on the vapour pressure below", .value = a->value, .unit = "K",
+      .source = enhanced ? factor_source : ideal_source,
+      STEP_SYMBOLS (SYMBOL ("p_w", p_water, "Pa"), SYMBOL ("psat", a->psat, "Pa"),
+                    SYMBOL ("f", a->factor, "1")) });
+  record_saturation (workings, q, a->value, a);
+}
+
 static bool
 answer_dew_point (const struct moist_question *q, struct moist_answer *a,
                   struct workings *workings, struct fault *fault)
@@ -175,13 +213,7 @@ answer_dew_point (const struct moist_question *q, struct moist_answer *a,
   if (!water_dew_point (p_water, &a->value, &a->phase, fault)
       || (q->air && !refine_dew_point (q, p_water, a, fault)))
     return false;
-  bool ice = a->phase == WATER_ICE, enhanced = a->applied == ENHANCEMENT_APPLIED;
-  workings_add (workings, "partial pressure of water", "p_w = y p", p_water, "Pa",
-                enhanced ? factor_source : ideal_source);
-  record_factor (workings, a);
-  workings_add (workings, ice ? "frost point" : "dew point",
-                enhanced ? "f psat(T_dew) = p_w" : "psat(T_dew) = p_w", a->value, "K",
-                ice ? ice_source : liquid_source);
+  record_dew_point (workings, q, p_water, a);
   return true;
 }
 

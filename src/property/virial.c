@@ -152,10 +152,11 @@ second_virial_of_gas (struct property_tables *tables, const struct composition *
   found.virial.value = sum_total (&sum);
   if (!isfinite (found.virial.value))
     return fault_set (fault, MESSAGE_NOT_FINITE, NULL, NULL);
-  workings_add (workings, "second virial coefficient", "B = sum_i sum_j x_i x_j B_ij",
-                found.virial.value, "m3/mol",
-                found.virial.estimated == NULL && gas->count == 1 ? "virial.tsv"
-                : "virial.tsv; pairs: C. Tsonopoulos, AIChE J. 20 (1974) 263");
+  workings_add (workings, &(struct step) {
+      .name = "second virial coefficient", .formula = "B = sum_i sum_j x_i x_j B_ij",
+      .solved = "added up over all pairs", .value = found.virial.value, .unit = "m3/mol",
+      .source = found.virial.estimated == NULL && gas->count == 1 ? "tables/virial.tsv"
+                : "tables/virial.tsv; pairs: C. Tsonopoulos, AIChE J. 20 (1974) 263" });
   *virial = found.virial;
   return true;
 }

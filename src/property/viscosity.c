@@ -109,16 +109,41 @@ find_parts (const struct figures *figures, const struct composition *gas, double
   return n;
 }
 
+/* Wilke's rule with the sum below each part, D_i = sum_j x_j phi_ij.  PART holds those of GAS that
+   are there, in its order.                                                                      */
 static void
-record (struct workings *workings, const struct viscosity *v)
+record (struct workings *workings, const struct figures *figures, const struct composition *gas,
+        const struct part_of_gas part[], const struct viscosity *v)
 {
-  if (v->mixture)
-    workings_add (workings, "viscosity", "mu = sum_i x_i mu_i/(sum_j x_j phi_ij)", v->value,
-                  "Pa s", "C. R. Wilke, J. Chem. Phys. 18 (1950) 517, eqs. 13 and 14; "
-                          "pure gases: viscosity.tsv");
-  else
-    workings_add (workings, "viscosity", "of the pure gas at low pressure", v->value, "Pa s",
-                  "viscosity.tsv");
+  static const char rule[] = "C. R. Wilke, J. Chem. Phys. 18 (1950) 517, eqs. 13 and 14";
+  if (workings == NULL)
+    return;
+  const size_t n = gas->count;
+  double *x = ARENA_ARRAY (workings->arena, n, double);
+  double *mu = ARENA_ARRAY (workings->arena, n, double);
+  double *below = ARENA_ARRAY (workings->arena, n, double);
+  const char **terms = ARENA_ARRAY (workings->arena, n, const char *);
+  const char **sources = ARENA_ARRAY (workings->arena, n, const char *);
+  size_t parts = 0, at = 0;
+  for (size_t i = 0; i < n; i++)
+    parts += gas->fraction[i] > 0;
+  for (size_t i = 0; i < n; i++) {
+    if (!(gas->fraction[i] > 0))
+      continue;
+    terms[at] = gas->species[i]->key;
+    sources[at] = figures_of (figures, gas->species[i])->source;
+    x[at] = part[at].x;
+    mu[at] = part[at].mu;
+    for (size_t j = 0; j < parts; j++)
+      below[at] += part[j].x * (j == at ? 1 : wilke_factor (&part[at], &part[j]));
+    at++;
+  }
+  workings_add (workings, &(struct step) {
+      .name = "viscosity", .formula = "mu = sum(x_i mu_i/D_i)", .value = v->value, .unit = "Pa s",
+      .source = v->mixture ? rule : "dilute gas; tables/viscosity.tsv",
+      .term_count = (unsigned) parts, .terms = terms,
+      STEP_COLUMNS ({ "x_i", x, "mol/mol", NULL, NULL }, { "mu_i", mu, "Pa s", NULL, sources },
+                    { "D_i", below, "1", rule, NULL }) });
 }
 
 bool
@@ -141,10 +166,11 @@ viscosity_of_gas (struct property_tables *tables, const struct composition *gas,
   found.mixture = n > 1;
   if (positive)
     found.value = wilke_sum (n, part);
+  if (positive && isfinite (found.value))
+    record (workings, figures, gas, part, &found);
   arena_destroy (arena);
   if (!positive || !isfinite (found.value))
     return fault_set (fault, MESSAGE_NOT_FINITE, NULL, NULL);
-  record (workings, &found);
   *viscosity = found;
   return true;
 }

@@ -84,6 +84,33 @@ first_outside (struct property_tables *tables, const struct side *a, const struc
   return of_a.outside != NULL ? of_a.outside : of_b.outside;
 }
 
+/* The enthalpies at the three temperatures, counted from 298.15 K.  */
+static void
+record (struct workings *workings, struct property_tables *tables, const struct stream *a,
+        const struct stream *b, double T)
+{
+  struct ideal_heat a_before, a_after, b_before, b_after;
+  struct fault unheard;
+  fault_init (&unheard, workings->arena);
+  if (!heat_of_gas (tables, a->gas, a->T, &a_before, NULL, &unheard)
+      || !heat_of_gas (tables, b->gas, b->T, &b_before, NULL, &unheard)
+      || !heat_of_gas (tables, a->gas, T, &a_after, NULL, &unheard)
+      || !heat_of_gas (tables, b->gas, T, &b_after, NULL, &unheard))
+    return;
+  workings_add (workings, &(struct step) {
+      .name = "temperature of the blend",
+      .formula = "n_a H_a + n_b H_b = n_a K_a + n_b K_b",
+      .solved = "Newton's steps: H at each side's own temperature, K at that of the blend",
+      .value = T, .unit = "K",
+      .source = "balance of ideal-gas enthalpies, tables/cp_ideal.tsv",
+      STEP_SYMBOLS (SYMBOL ("n_a", a->moles, a->flow ? "mol/s" : "mol"),
+                    SYMBOL ("n_b", b->moles, b->flow ? "mol/s" : "mol"),
+                    SYMBOL ("H_a", a_before.enthalpy, "J/mol"),
+                    SYMBOL ("H_b", b_before.enthalpy, "J/mol"),
+                    SYMBOL ("K_a", a_after.enthalpy, "J/mol"),
+                    SYMBOL ("K_b", b_after.enthalpy, "J/mol")) });
+}
+
 bool
 stream_blend_temperature (struct property_tables *tables, const struct stream *a,
                           const struct stream *b, struct blend_temperature *blend,
@@ -103,9 +130,8 @@ stream_blend_temperature (struct property_tables *tables, const struct stream *a
         || !solve (tables, &of_a, &of_b, &found.T, fault))
       return false;
     found.outside = first_outside (tables, &of_a, &of_b, found.T, fault);
-    workings_add (workings, "temperature of the blend",
-                  "n_a H_a(T_a) + n_b H_b(T_b) = n_a H_a(T) + n_b H_b(T)", found.T, "K",
-                  "balance of ideal-gas enthalpies, cp_ideal.tsv");
+    if (workings != NULL)
+      record (workings, tables, a, b, found.T);
   }
   *blend = found;
   return true;

@@ -80,13 +80,6 @@ static const struct { const char *name; struct dimension dimension; } quantities
 
 static const size_t quantity_count = sizeof quantities / sizeof quantities[0];
 
-bool
-dimension_equal (struct dimension a, struct dimension b)
-{
-  return a.length == b.length && a.mass == b.mass && a.time == b.time
-         && a.temperature == b.temperature && a.amount == b.amount;
-}
-
 static signed char
 narrowed (int exponent)
 {

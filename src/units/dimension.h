@@ -5,13 +5,23 @@
 #include <stdbool.h>
 #include "support/check.h"
 
+struct arena;
+
 struct dimension { signed char length, mass, time, temperature, amount; };
 
-bool dimension_equal (struct dimension, struct dimension);
+/* Asked many times for every figure.  */
+static inline bool
+dimension_equal (struct dimension a, struct dimension b)
+{
+  return a.length == b.length && a.mass == b.mass && a.time == b.time
+         && a.temperature == b.temperature && a.amount == b.amount;
+}
 struct dimension dimension_times (struct dimension, struct dimension);
 struct dimension dimension_over (struct dimension, struct dimension);
 struct dimension dimension_power (struct dimension, int);
 bool dimension_is_none (struct dimension);
+/* The SI unit of a dimension: "Pa", "mol/s", "kg/(m s)"; "1" for a plain number.  */
+const char *dimension_text (struct arena *, struct dimension);
 /* "mass per time", "pressure", ... in the trade's words; null where there is no word for it.  */
 const char *dimension_name (struct dimension);
 /* The dimension of a quantity by its name, for the rows of tables/units.tsv.  False: no such

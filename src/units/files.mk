@@ -6,6 +6,7 @@ noinst_LIBRARIES += %D%/libunits.a
   %D%/constants.h \
   %D%/dimension.c \
   %D%/dimension.h \
+  %D%/dimension_text.c \
   %D%/exact.c \
   %D%/exact.h \
   %D%/unit.c \

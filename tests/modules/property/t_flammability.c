@@ -184,7 +184,10 @@ said (void)
   NEED (flammability_of (gases_make (&gases, "CH4 1, N2 1"), NULL, 0, &f, &workings,
                          &gases.fault));
   SAME_INT (workings.count, 6);
-  SAME_TEXT (workings.last->name, "least oxygen");
+  SAME_TEXT (workings.last->name, "upper limit of the gas in air");
+  NEAR (workings.last->value, f.upper, 0);
+  SAME_TEXT (workings.first->terms[0], "CH4");
+  SAME_TEXT (workings.first->next->columns[1].sources[0], "IEC 60079-20-1:2010");
 }
 
 static const struct test_case cases[] = {

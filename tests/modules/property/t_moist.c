@@ -70,7 +70,8 @@ frost (void)
   NEED (moist_dew_point (y, 101325, &T, &over_ice, &workings, &fault));
   CHECK (over_ice);
   NEAR (T, 263.15, 1e-12);
-  SAME_TEXT (workings.last->name, "frost point");
+  SAME_TEXT (workings.last->name, "vapour pressure of ice");
+  NEAR (workings.last->value, y * 101325, 1e-9);         /* at the frost point it is that */
 }
 
 /* Dew point 12 degC stays 12 degC at the same pressure, and rises with pressure: at twice the
