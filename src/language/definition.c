@@ -6,11 +6,13 @@
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/check/sheet.h"
+#include "language/evaluate/record.h"
 #include "language/evaluate/wording.h"
 #include "property/hazard.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
+#include "units/workings.h"
 
 /* ---- Life ---- */
 
@@ -104,6 +106,16 @@ definition_release (struct definition *d)
 
 /* ---- Working it out ---- */
 
+/* A stated calorific value, told per mole.  */
+static void
+record_stated (struct evaluation *ev, const char *formula, double stated, double per, double H)
+{
+  RECORD (ev, .name = "calorific value, molar, of", .of = ev->subject, .formula = formula,
+          .value = H, .unit = "J/mol", .source = STEP_DEFINITION,
+          STEP_SYMBOLS (CONSTANT ("h", stated, NULL, STEP_TYPED), SYMBOL ("M", per, "kg/mol"),
+                        SYMBOL ("V", per, "m3/mol")));
+}
+
 /* A stated calorific value as J/mol: per mole, per kilogram, per reference volume, or per cubic
    metre at the conditions of Sm3, of an ideal gas.                                              */
 static bool
@@ -116,12 +128,14 @@ stated_heat (struct evaluation *ev, const struct stated_property *p, const struc
     *H = v->si;
   } else if (dimension_equal (dimension_times (d, DIMENSION_MASS), DIMENSION_ENERGY)) {
     *H = v->si * molar_mass;
+    record_stated (ev, "H = h M", v->si, molar_mass, *H);
   } else if (dimension_equal (dimension_times (d, DIMENSION_VOLUME), DIMENSION_ENERGY)) {
     enum reference_family family = v->measure.family_power ? v->measure.family : FAMILY_STANDARD;
     if (!family_molar_volume (ev, family, NULL, false, &Vm)) {
       return false;
     }
     *H = v->si * Vm;
+    record_stated (ev, "H = h V", v->si, Vm, *H);
   } else {
     return fault_set_at (ev->fault, MESSAGE_UNIT_MISMATCH, p->quantity->at,
                          "a calorific value is energy per volume, mass or mole", NULL);
@@ -318,6 +332,7 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
 {
   struct evaluation ev;
   struct result notes;
+  struct workings steps;
   struct value value;
   struct state state;
   arena_reset (d->cache);
@@ -326,6 +341,8 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
   evaluation_init (&ev, session, &notes, fault);
   ev.arena = d->cache;
   file_tell (d, &notes);
+  workings_init (&steps, d->cache);
+  ev.workings = &steps;
   if (!body (&ev, d, &value, &state)) {
     return false;
   }
@@ -349,6 +366,9 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
   d->source_count = ev.source_count;
   d->notes = notes.notes;
   d->cautions = notes.cautions;
+  d->steps = steps.first;
+  d->used = ev.used;
+  d->used_count = ev.used_count;
   d->fresh = true;
   return true;
 }

@@ -32,6 +32,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/commands/trim.c \
   %D%/commands/trim.h \
   %D%/commands/trim_tell.c \
+  %D%/commands/workings.c \
   %D%/convert/convert.c \
   %D%/convert/convert.h \
   %D%/convert/convert_heat.c \
@@ -58,6 +59,10 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/evaluate/flow.h \
   %D%/evaluate/heat.c \
   %D%/evaluate/question.c \
+  %D%/evaluate/record.c \
+  %D%/evaluate/record.h \
+  %D%/evaluate/record_gas.c \
+  %D%/evaluate/record_sum.c \
   %D%/evaluate/source.c \
   %D%/evaluate/state.c \
   %D%/evaluate/uncertainty.c \
@@ -68,7 +73,10 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/evaluate/wording.c \
   %D%/evaluate/wording.h \
   %D%/from_file.c \
+  %D%/kept.c \
+  %D%/kept.h \
   %D%/mentions.c \
+  %D%/mentions.h \
   %D%/names.c \
   %D%/parse.h \
   %D%/parse/parse.c \

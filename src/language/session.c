@@ -10,6 +10,7 @@
 #include "language/check/readings.h"
 #include "language/commands/commands.h"
 #include "language/evaluate/wording.h"
+#include "language/kept.h"
 #include "property/calorific.h"
 #include "property/property_tables.h"
 #include "result/result.h"
@@ -53,6 +54,7 @@ session_create (const struct session_options *options, struct fault *fault)
   struct session *s = memory_get (1, sizeof *s);
   s->options = *options;
   s->arena = arena_create ();
+  s->kept = memory_get (1, sizeof *s->kept);
   s->properties = property_tables_create (options->tables);
   s->names = map_create ();
   s->mentioned = map_create ();
@@ -71,6 +73,7 @@ session_destroy (struct session *s)
     return;
   }
   block_drop (s);
+  kept_destroy (s);
   undo_clear (s);
   names_clear (s);
   if (s->references) {
@@ -120,12 +123,25 @@ session_spoil_block (struct session *s)
   s->block.spoilt = s->block.arena != NULL;
 }
 
+/* Statements that change nothing an answer could have come from.  */
+static bool
+only_looks (enum statement_kind kind)
+{
+  return kind == STATEMENT_ASK || kind == STATEMENT_WORKINGS
+         || kind == STATEMENT_NOTE
+         || kind == STATEMENT_HELP || kind == STATEMENT_LIST || kind == STATEMENT_SHOW
+         || kind == STATEMENT_SAVE || kind == STATEMENT_EMPTY || kind == STATEMENT_QUIT;
+}
+
 bool
 session_run (struct session *s, const struct statement *statement, struct result *result,
              struct fault *fault)
 {
   if (!fault->arena) {
     fault->arena = result->arena;
+  }
+  if (!only_looks (statement->kind)) {
+    kept_settle (s);
   }
   return statement->kind == STATEMENT_ASK ? ask (s, statement, result, fault)
                                           : command_run (s, statement, result, fault);

@@ -33,6 +33,11 @@ void session_spoil_block (struct session *);
 bool session_run (struct session *, const struct statement *, struct result *,
                   struct fault *) MUST_CHECK;
 
+/* The arena for the next line, emptied: what the last answer stands in is left alone, so that
+   `workings` and `note` can look at it.  Owned by the session.  A line that was read and run in
+   another arena has no workings.                                                                */
+struct arena *session_line_arena (struct session *);
+
 /* For the prompt: digits on screen; is some setting not as shipped; the opening line's settings
    ("barometer 1.01325 bar (standard)   volumes ideal-gas").                                     */
 int session_digits (const struct session *);

@@ -5,12 +5,12 @@
 #include <stdbool.h>
 #include <stddef.h>
 #include "language/evaluate/evaluation.h"
+#include "language/mentions.h"
 #include "language/session.h"
 #include "support/check.h"
 
-struct calorific_tables; struct composition; struct map; struct property_tables;
-struct readings; struct reference_table; struct remark; struct result;
-struct species;
+struct calorific_tables; struct composition; struct kept; struct map; struct property_tables;
+struct readings; struct reference_table; struct remark; struct result; struct species; struct step;
 
 enum name_kind { NAME_GAS, NAME_STREAM, NAME_QUANTITY, NAME_REFERENCE, NAME_SHEET };
 
@@ -36,6 +36,9 @@ struct definition {
   struct source *sources;
   size_t assumption_count, source_count;
   struct remark *notes, *cautions;         /* from the cache */
+  const struct step *steps;                /* how it came about, but for the names it used: */
+  struct definition **used;
+  size_t used_count;
   bool told;                               /* its notes have stood under an answer */
   struct file_read *file;                  /* of a gas from a file: what was read; or null */
   bool asked_over;                         /* a trend over its file has said what that holds */
@@ -86,6 +89,7 @@ struct session {
   unsigned group, groups_open;             /* of the next change; how deep in `open` */
   char *last_subject;                      /* source of the last question's expression; or null */
   size_t last_length, last_room;
+  struct kept *kept;                       /* owned */
 };
 
 const struct settings *session_settings (const struct session *);
@@ -180,29 +184,6 @@ bool block_close (struct session *, const struct statement *end, struct result *
 void block_drop (struct session *);
 /* A place counted in the source of the open block, counted where the line was typed.  */
 void block_place (const struct session *, struct fault *);
-
-/* ---- Who leans on whom (mentions.c) ---- */
-
-/* Does D lean on NAME, directly or through others?  */
-bool definition_leans (struct session *, struct definition *, const char *name);
-/* All that lean on NAME, in the order of the session, into an array in ARENA; how many.  */
-size_t names_leaning (struct session *, struct arena *, const char *name,
-                      struct definition ***leaning);
-void names_remember_mentions (struct session *, struct definition *);
-/* NAME (null: a setting) changed: what leans on it is to be worked out again, ...  */
-void names_changed (struct session *, const char *name);
-/* ... which this does now, in the order of the session, so that no chain of names is worked out
-   from its far end.                                                                             */
-void names_refresh (struct session *);
-
-/* The first node of a statement's trees that mentions NAME, or null.  */
-const struct node *tree_mention (const struct statement *, const char *name);
-/* Calls VISIT for every node of a statement's trees.  */
-void tree_visit (const struct statement *, void (*visit) (const struct node *, void *), void *);
-
-/* The part of an expression that brings a gas of its own into being, that no definition speaks
-   for: a list, a blend, a remainder; or null.                                                   */
-const struct node *tree_new_gas (const struct node *);
 
 /* ---- Undo (undo.c) ---- */
 

@@ -176,7 +176,7 @@ is_stated (const struct species *species, const struct flammable_limits stated[]
 }
 
 /* The fuels and their limits.  */
-struct fuels { size_t count; const char **terms, **sources; double *x, *lower, *upper, *oxygen; };
+struct fuels { unsigned count; const char **terms, **sources; double *x, *lower, *upper, *oxygen; };
 
 static struct fuels
 fuels_of (struct arena *arena, const struct composition *gas,
@@ -233,23 +233,23 @@ record (struct workings *workings, const struct composition *gas,
   const struct step_column x = { "x_i", fuels.x, "mol/mol", NULL, NULL };
   workings_add (workings, &(struct step) {
       .name = "fuel in the gas", .formula = "F = sum(x_i)", .value = f->fuel, .unit = "mol/mol",
-      .source = rule, .term_count = (unsigned) fuels.count, .terms = fuels.terms, STEP_COLUMNS (x) });
+      .source = rule, .term_count = fuels.count, .terms = fuels.terms, STEP_COLUMNS (x) });
   workings_add (workings, &(struct step) {
       .name = "lower limit of the fuels", .formula = "L_F = F/sum(x_i/L_i)",
-      .value = f->fuel_lower, .unit = "mol/mol", .source = rule, .term_count = (unsigned) fuels.count,
+      .value = f->fuel_lower, .unit = "mol/mol", .source = rule, .term_count = fuels.count,
       .terms = fuels.terms, STEP_SYMBOLS (SYMBOL ("F", f->fuel, "mol/mol")),
       STEP_COLUMNS (x, { "L_i", fuels.lower, "mol/mol", NULL, fuels.sources }) });
   if (!isnan (f->fuel_upper))
     workings_add (workings, &(struct step) {
         .name = "upper limit of the fuels", .formula = "U_F = F/sum(x_i/U_i)",
-        .value = f->fuel_upper, .unit = "mol/mol", .source = rule, .term_count = (unsigned) fuels.count,
+        .value = f->fuel_upper, .unit = "mol/mol", .source = rule, .term_count = fuels.count,
         .terms = fuels.terms, STEP_SYMBOLS (SYMBOL ("F", f->fuel, "mol/mol")),
         STEP_COLUMNS (x, { "U_i", fuels.upper, "mol/mol", NULL, fuels.sources }) });
   if (!isnan (f->least_oxygen))
     workings_add (workings, &(struct step) {
         .name = "least oxygen", .formula = "O = L_F sum(x_i o_i)/F", .value = f->least_oxygen,
         .unit = "mol/mol", .source = "estimate, common practice, no source",
-        .term_count = (unsigned) fuels.count, .terms = fuels.terms,
+        .term_count = fuels.count, .terms = fuels.terms,
         STEP_SYMBOLS (SYMBOL ("L_F", f->fuel_lower, "mol/mol"), SYMBOL ("F", f->fuel, "mol/mol")),
         STEP_COLUMNS (x, { "o_i", fuels.oxygen, "mol/mol", "burnt to CO2, H2O, N2 and SO2", NULL })
       });

@@ -13,6 +13,8 @@
    - a check: the computed figure is a row like any; behind it one for each reading that fits, is
      ruled out, or would have to be true instead: `label` says which, `basis` what it is;
    - a trend: a row a sample, `label` its name; behind them mean, standard deviation, median;
+   - workings: a row a step; `what` is the step, `label` its formula, `basis` the source; a row for
+     each term of a formula that has a figure for each, `what` "STEP, TERM";
    - help: `what` is the topic, `label` say, get or try, `value` the text;
    - a statement that only had something to note: one row without a value.                      */
 #include "config.h"
@@ -22,10 +24,13 @@
 #include <string.h>
 
 #include "result/check_verdict.h"
+#include "report/formula.h"
 #include "result/result.h"
 #include "result/trend.h"
+#include "result/workings_record.h"
 #include "support/number.h"
 #include "support/text.h"
+#include "units/workings.h"
 
 /* What all rows of a statement share: its text in front and the remarks at the end.  */
 struct frame { struct text *out; struct text front, back; };
@@ -262,6 +267,37 @@ trend_add (struct frame *frame, const struct trend *trend)
 }
 
 static void
+step_row (struct frame *frame, const struct step *step, const char *what, double value)
+{
+  row_open (frame, what, step->formula);
+  next_number (frame->out, value);
+  next_field (frame->out, step->unit);
+  text_add (frame->out, ",,");
+  next_field (frame->out, step->source);
+  row_close (frame);
+}
+
+static void
+steps_add (struct frame *frame, const struct workings_record *record)
+{
+  for (const struct step *s = record->steps; s != NULL; s = s->next) {
+    const struct step_column *each = formula_is_for_terms (s) ? formula_result (s) : NULL;
+    struct text what;
+    text_init (&what);
+    step_name (&what, s);
+    const size_t n = what.length;
+    for (size_t t = 0; each != NULL && t < s->term_count; t++) {
+      what.length = n;
+      text_add_format (&what, ", %s", s->terms[t]);
+      step_row (frame, s, what.bytes, each->at[t]);
+    }
+    if (each == NULL)
+      step_row (frame, s, what.bytes, s->value);
+    text_clear (&what);
+  }
+}
+
+static void
 rows_add (struct frame *frame, const struct result *result)
 {
   for (const struct answer *a = result->answers; a != NULL; a = a->next)
@@ -278,8 +314,10 @@ rows_add (struct frame *frame, const struct result *result)
     trend_add (frame, result->trend);
   if (result->help != NULL)
     help_page_add (frame, result->help);
+  if (result->workings != NULL)
+    steps_add (frame, result->workings);
   if (result->answers == NULL && result->cards == NULL && result->help == NULL
-      && result->trend == NULL)
+      && result->trend == NULL && result->workings == NULL)
     words_add (frame, NULL, NULL, NULL, NULL);
 }
 

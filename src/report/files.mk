@@ -12,6 +12,8 @@ noinst_LIBRARIES += %D%/libreport.a
   %D%/csv.c \
   %D%/error.c \
   %D%/figure.c \
+  %D%/formula.c \
+  %D%/formula.h \
   %D%/help.c \
   %D%/json.c \
   %D%/remark.c \
@@ -20,4 +22,6 @@ noinst_LIBRARIES += %D%/libreport.a
   %D%/report_private.h \
   %D%/style.c \
   %D%/text.c \
-  %D%/trend.c
+  %D%/trend.c \
+  %D%/workings.c \
+  %D%/workings_machine.c

@@ -3,7 +3,7 @@
 
    A result: {"statement","answers":[{"what","label"?,"value","unit","basis","uncertainty"?,
        "expanded"?,"coverage"?}],
-     "card"?,"further_cards"?,"help"?,"taken":[...],"notes":[...],"cautions":[...]}
+     "card"?,"further_cards"?,"help"?,"workings"?,"taken":[...],"notes":[...],"cautions":[...]}
    "basis" begins with wet or dry where that is known and is "" where there is none to state.  A
    figure nobody could compute is null.  "uncertainty" is standard; "expanded" is that times
    "coverage", where one is set.  The lists hold the sentences of the text form without the
@@ -418,6 +418,8 @@ report_json (struct text *out, const struct result *result)
     check_add (out, result->check);
   if (result->trend != NULL)
     trend_add (out, result->trend);
+  if (result->workings != NULL)
+    report_workings_json (out, result->workings);
   remarks_add (out, ",\"taken\":", result->taken);
   remarks_add (out, ",\"notes\":", result->notes);
   remarks_add (out, ",\"cautions\":", result->cautions);

@@ -13,7 +13,7 @@
 #include "support/text.h"
 
 struct card; struct fault; struct help_page; struct remark; struct report_origin; struct result;
-struct trend;
+struct step; struct trend; struct workings_record;
 
 /* Columns of the text form, counted from 0.  Columns 0 to 5 are the margin: a mark stands in
    column 2, a word of help in columns 0 to 2; all text begins in column 6.                      */
@@ -83,6 +83,10 @@ void report_check (struct text *, const struct report_style *, const struct resu
 void report_trend (struct text *, const struct report_style *, const struct trend *);
 void report_card (struct text *, const struct report_style *, const struct card *);
 void report_help (struct text *, const struct report_style *, const struct help_page *);
+void report_workings (struct text *, const struct report_style *, const struct workings_record *);
+void report_workings_json (struct text *, const struct workings_record *);
+/* "volume of a mole, Nm3"; "raw in kg/h".  */
+void step_name (struct text *, const struct step *);
 void report_fault_text (struct text *, const struct report_style *, const struct fault *,
                         const struct report_origin *);
 void report_fault_json (struct text *, const struct fault *, const struct report_origin *);

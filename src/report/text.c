@@ -289,6 +289,8 @@ report_text (struct text *out, const struct report_style *style, const struct re
     report_trend (out, style, result->trend);
   if (result->help != NULL)
     report_help (out, style, result->help);
+  if (result->workings != NULL)
+    report_workings (out, style, result->workings);
   if (result->taken != NULL)
     taken_add (out, style, result->taken);
   remarks_add (out, style, result->notes, '~', "note: ");

@@ -5,4 +5,5 @@ noinst_LIBRARIES += %D%/libresult.a
   %D%/check_verdict.h \
   %D%/result.c \
   %D%/result.h \
-  %D%/trend.h
+  %D%/trend.h \
+  %D%/workings_record.h

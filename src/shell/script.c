@@ -30,14 +30,13 @@ void
 script_init (struct script *script, struct session *session, struct output *output)
 {
   *script = (struct script) { .session = session, .output = output,
-                              .arena = arena_create () };
+                              .arena = session_line_arena (session) };
   take_digits (script);
 }
 
 void
 script_clear (struct script *script)
 {
-  arena_destroy (script->arena);
   text_clear (&script->line);
 }
 
@@ -133,7 +132,7 @@ script_run_line (struct script *script, const struct script_line *line)
   struct fault fault;
   bool answered = false;
 
-  arena_reset (script->arena);
+  script->arena = session_line_arena (script->session);
   parser = parser_create (script->arena, session_vocabulary (script->session), line->text,
                           line->n, line->first, session_block (script->session));
   while (!script->quit && !is_stopped (line)) {
@@ -160,7 +159,7 @@ tell_open_block (struct script *script, const struct reader *reader)
   const struct script_line line = { .text = "", .file = reader->name };
   struct fault fault;
 
-  arena_reset (script->arena);
+  script->arena = session_line_arena (script->session);
   fault_init (&fault, script->arena);
   fault_set_at (&fault, MESSAGE_UNFINISHED, (struct place) { reader->line, 0, 0 },
                 "a block is closed with 'end'", NULL);

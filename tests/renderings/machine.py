@@ -5,6 +5,8 @@ import sys
 
 ANSWER = {"what": str, "value": (int, float, type(None)), "unit": str, "basis": str}
 ERROR = {"kind": str, "message": str, "line": int, "column": int, "hint": str}
+STEP = {"step": str, "formula": str, "value": (int, float, type(None)), "unit": str,
+        "source": str, "share": (int, float, type(None)), "figures": str}
 HEADING = ("statement,what,label,value,unit,uncertainty,moisture,basis,taken,notes,"
            "cautions").split(",")
 
@@ -40,6 +42,8 @@ def look_at_line(line):
             wrong.append("uncertainty")
     for name in ("taken", "notes", "cautions"):
         wrong += [name for one in thing[name] if not isinstance(one, str)]
+    for step in thing.get("workings", []):
+        wrong += missing(step, STEP)
     card = thing.get("card", {"columns": [], "rows": []})
     for row in card["rows"]:
         if len(row["values"]) != len(card["columns"]):

@@ -15,9 +15,11 @@
 #include "report/report.h"
 #include "result/result.h"
 #include "result/trend.h"
+#include "result/workings_record.h"
 #include "support/arena.h"
 #include "support/fault.h"
 #include "support/text.h"
+#include "units/workings.h"
 
 struct scene {
   const char *name;
@@ -313,6 +315,55 @@ fail_nowhere (struct fault *fault, struct report_origin *origin)
   fault_set (fault, MESSAGE_FILE, "gone.gw", "there is no such file");
 }
 
+/* Every sort of step: a plain one, a sum, one for each part, one that is solved, one that was
+   given; and what an uncertainty is made of.                                                    */
+static void
+build_workings (struct result *result)
+{
+  static const double x[] = { 0.6, 0.4 }, M[] = { 0.016043, 0.044009 }, half[] = { 0.3, 0.2 };
+  static const char *const parts[] = { "CH4", "CO2" };
+  static const struct step_column shares[] = { { "x_i", x, "mol/mol", NULL, NULL },
+                                               { "M_i", M, "kg/mol", "CIAAW 2021", NULL } };
+  static const struct step_column halves[] = { { "y_i", half, "mol", NULL, NULL },
+                                               { "x_i", x, "mol/mol", NULL, NULL } };
+  static const struct step_symbol gas_law[] = {
+    { "R", 8.31446261815324, "J/(mol K)", "SI Brochure, 9th ed. (2019)", NULL },
+    { "T", 273.15, "K", NULL, NULL }, { "p", 101325, "Pa", NULL, NULL } };
+  static const struct step_symbol n[] = { { "n", -0.5, "mol", NULL, NULL } };
+  static struct step steps[] = {
+    { .name = "volume of a mole,", .of = "Nm3", .formula = "V = R T/p",
+      .value = 0.022413969545014137, .unit = "m3/mol", .source = "ideal gas law, p V = n R T",
+      .symbols = gas_law, .symbol_count = 3 },
+    { .name = "molar mass of", .of = "raw", .formula = "M = sum(x_i M_i)", .value = 0.0272294,
+      .unit = "kg/mol", .source = "by definition", .terms = parts, .term_count = 2,
+      .columns = shares, .column_count = 2 },
+    { .name = "half of it", .formula = "y_i = -n x_i (1 + 0)", .value = (double) NAN,
+      .unit = "mol", .source = "by definition", .symbols = n, .symbol_count = 1, .terms = parts,
+      .term_count = 2, .columns = halves, .column_count = 2 },
+    { .name = "dew point", .formula = "psat(T) = p", .solved = "Newton's steps, 4",
+      .value = 285.15, .unit = "K", .source = "IAPWS SR1-86(1992), eq. 1",
+      .symbols = &gas_law[2], .symbol_count = 1 },
+    { .name = "site pressure", .formula = "", .value = 98700, .unit = "Pa", .source = "as set" },
+    { .kind = STEP_ANSWER, .name = "raw", .of = "kg/h", .formula = "a = q", .value = 1041,
+      .unit = "kg/h", .source = "by definition" }
+  };
+  static const struct budget_line lines[] = {
+    { .what = "CH4 58.2 \u00B1 0.3 mol%", .of = "raw", .u = 0.3, .unit = "mol%",
+      .sensitivity = -10, .contribution = -3, .share = 0.9 },
+    { .what = "850 \u00B1 1 Nm3/h", .u = 1, .unit = "Nm3/h", .sensitivity = 1, .contribution = 1,
+      .share = 0.1 } };
+  static const struct budget budget = { 3.1622776601683795, 2, lines };
+  static const struct answer answer = { .what = "raw", .value = 1041, .unit = "kg/h",
+                                        .uncertainty = 3.1622776601683795, .budget = &budget };
+  static const struct workings_source source = { "CIAAW 2021", "T. Prohaska et al. (2022)", NULL };
+  static const struct workings_record record = { "850 Nm3/h of raw in kg/h", steps, 6, &answer, 1,
+                                                 &source };
+  for (size_t i = 0; i + 1 < sizeof steps / sizeof steps[0]; i++)
+    steps[i].next = &steps[i + 1];
+  result->statement = "workings";
+  result->workings = &record;
+}
+
 static const struct scene scenes[] = {
   { "answer", "text prompt weights json csv", build_answer, NULL },
   { "uncertain", "text prompt json csv", build_uncertain, NULL },
@@ -332,7 +383,8 @@ static const struct scene scenes[] = {
   { "line", "prompt json", NULL, fail_line },
   { "phrase", "prompt json", NULL, fail_phrase },
   { "ways", "prompt json", NULL, fail_ways },
-  { "nowhere", "text json", NULL, fail_nowhere }
+  { "nowhere", "text json", NULL, fail_nowhere },
+  { "workings", "text weights json csv", build_workings, NULL }
 };
 
 enum { SCENES = sizeof scenes / sizeof scenes[0] };

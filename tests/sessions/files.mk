@@ -25,4 +25,5 @@ session_tests = \
   %D%/sheets.sh \
   %D%/treatments.sh \
   %D%/trims.sh \
-  %D%/uncertainty.sh
+  %D%/uncertainty.sh \
+  %D%/workings.sh

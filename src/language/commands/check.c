@@ -8,10 +8,12 @@
 #include "language/check/search.h"
 #include "language/check/sheet.h"
 #include "language/evaluate/flow.h"
+#include "language/kept.h"
 #include "property/enhancement.h"
 #include "result/check_verdict.h"
 #include "result/result.h"
 #include "support/arena.h"
+#include "units/workings.h"
 
 static const struct readings *
 readings_of (struct session *session, struct fault *fault)
@@ -111,6 +113,24 @@ check_sheet (struct session *session, const struct statement *s, struct result *
   return true;
 }
 
+/* How the stated figure is held against the computed one.  */
+static void
+record_verdict (struct session *session, const struct result *result, const struct check_verdict *v)
+{
+  const struct step_symbol figures[] = { CONSTANT ("s", v->value, v->unit, STEP_TYPED),
+                                         SYMBOL ("c", v->computed, v->unit) };
+  kept_extend (session, result, &(struct step) {
+      .name = "stated less computed", .formula = "d = s - c", .value = v->difference,
+      .unit = v->unit, .source = STEP_DEFINITION, .symbols = figures, .symbol_count = 2 });
+  kept_extend (session, result, &(struct step) {
+      .name = "deviation", .formula = "e = s/c - 1", .value = v->deviation, .unit = "1",
+      .source = STEP_DEFINITION, .symbols = figures, .symbol_count = 2 });
+  kept_extend (session, result, &(struct step) {
+      .name = "difference up to which they agree", .formula = "", .value = v->limit,
+      .unit = v->unit, .source = v->by_digits ? "half the last digit typed, 0.5 % at most"
+                                              : "two standard uncertainties" });
+}
+
 bool
 command_check (struct session *session, const struct statement *s, struct result *result,
                struct fault *fault)
@@ -135,6 +155,7 @@ command_check (struct session *session, const struct statement *s, struct result
     note_inlet (&check, result);
     result_remark (result, MESSAGE_CAUTION_CUSTODY, NULL, NULL);
     result->check = v;
+    record_verdict (session, result, v);
   }
   check_release (&check);
   return done;

@@ -73,6 +73,8 @@ command_run (struct session *session, const struct statement *s, struct result *
     return block_add (session, s, fault);
   case STATEMENT_END:
     return block_close (session, s, result, fault);
+  case STATEMENT_WORKINGS:
+    return command_workings (session, s, result, fault);
   case STATEMENT_TRIM:
     return command_trim (session, s, result, fault);
   case STATEMENT_QUIT:
@@ -83,7 +85,6 @@ command_run (struct session *session, const struct statement *s, struct result *
   case STATEMENT_BALANCE:
   case STATEMENT_SOLVE:
   case STATEMENT_NOTE:
-  case STATEMENT_WORKINGS:
   case STATEMENT_MIX:
   case STATEMENT_SEPARATE:
   case STATEMENT_SPLIT:

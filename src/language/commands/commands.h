@@ -21,7 +21,7 @@ bool command_run (struct session *, const struct statement *, struct result *, s
 
 command command_check, command_define, command_normalise, command_set, command_show, command_list,
   command_forget, command_trim, command_trend, command_samples, command_save,
-  command_open, command_help, command_undo;
+  command_open, command_help, command_undo, command_workings;
 
 /* The cards of `show` (card_*.c).  */
 bool card_of_gas (struct session *, const struct gas_value *, const char *name,
@@ -46,5 +46,9 @@ void card_add_limits (struct result *, struct card *, const struct composition *
 
 /* "gas model".  */
 const char *setting_name (enum setting);
+
+/* How a kept answer came about (workings.c), in the arena.  */
+struct arena; struct kept_answer; struct workings_record;
+const struct workings_record *workings_of (struct session *, struct arena *, struct kept_answer *);
 
 #endif

@@ -408,6 +408,7 @@ command_trim (struct session *session, const struct statement *s, struct result 
   }
   bool moved = memcmp (t.x, t.before, t.count * sizeof *t.x) != 0;
   undo_group_open (session);
+  struct answer **rows = result->last_answer;
   trim_answer (&t, result);
   if ((moved && !keep (&t, result, fault)) || !ask_for_aims (&t, result, fault)) {
     undo_group_drop (session);
@@ -415,5 +416,6 @@ command_trim (struct session *session, const struct statement *s, struct result 
   }
   undo_group_close (session);
   trim_tell (&t, &found, moved, result);
+  trim_record (&t, result, *rows);
   return true;
 }

@@ -7,6 +7,8 @@
 #include "language/commands/commands.h"
 #include "support/search.h"
 
+struct answer;
+
 struct trim {
   struct session *session;
   const struct statement *statement;
@@ -33,6 +35,8 @@ const char *trim_aims (const struct trim *);
 void trim_answer (struct trim *, struct result *);
 /* What is to be said about them.  */
 void trim_tell (struct trim *, const struct search_finding *, bool moved, struct result *);
+/* How they came about, for `workings`.  */
+void trim_record (struct trim *, const struct result *, const struct answer *rows);
 /* No value does: how near it came, and where.  Always false.  */
 bool trim_unreachable (struct trim *, const struct search_finding *, struct fault *);
 bool trim_unbounded (struct trim *, struct fault *);

@@ -5,9 +5,11 @@
 #include <string.h>
 #include "gas/species.h"
 #include "language/evaluate/wording.h"
+#include "language/kept.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
+#include "units/workings.h"
 
 /* A condition so near its limit stands at it.  */
 #define AT_ITS_LIMIT 1e-9
@@ -150,6 +152,26 @@ trim_unbounded (struct trim *t, struct fault *fault)
   fault_hint (fault, "give a range: trim %s from 0 to 500%s%s so ...",
               name_text (t->arena, s->names->text), *unit_of (t, 0) ? " " : "", unit_of (t, 0));
   return false;
+}
+
+void
+trim_record (struct trim *t, const struct result *result, const struct answer *rows)
+{
+  const struct value none = value_number (UNSTATED);
+  size_t count = 0;
+  for (const struct answer *a = rows; a; a = a->next) {
+    count++;
+  }
+  kept_add (t->session, &(struct asked) { t->first, t->statement, &none, rows, count }, result);
+  for (size_t i = 0; i < t->count; i++) {
+    const char *unit = unit_of (t, i);
+    kept_extend (t->session, result, &(struct step) {
+        .name = "moved until what is aimed at holds:",
+        .of = arena_string (t->arena, t->moved[i].definition->name), .formula = trim_aims (t),
+        .solved = "Newton's steps and halvings, the whole of what is aimed at worked out at each",
+        .value = t->x[i], .unit = *unit ? unit : "1", .source = "the aims, as typed",
+        STEP_SYMBOLS (SYMBOL ("before", t->before[i], unit)) });
+  }
 }
 
 /* ---- Notes ---- */

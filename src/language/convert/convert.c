@@ -6,6 +6,7 @@
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/evaluate/flow.h"
+#include "language/evaluate/record.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
 
@@ -37,6 +38,8 @@ conversion_add (struct conversion *c, double si, const struct standing *standing
                            || c->value->kind == VALUE_CALORIFIC
                            || (c->value->kind == VALUE_QUANTITY && c->value->basis) };
   figures_add (c->ev, c->figures, &figure);
+  record_told (c->ev, &(struct told) { c->label ? c->label : standing->what, c->unit_text, c->unit,
+                                       si, value });
   return true;
 }
 
@@ -270,6 +273,9 @@ counted_as (struct conversion *c, const struct species *species, double *per_mol
                                        species->key, c->counted_as->text), NULL);
   }
   *molar_mass = set.at[0]->molar_mass;
+  RECORD (c->ev, .name = arena_format (c->ev->arena, "moles of %s counted for one of",
+                                       c->counted_as->text), .of = species->key,
+          .formula = "", .value = *per_mole, .unit = "mol/mol", .source = "the formulas");
   if (c->ev->result && species != set.at[0]) {
     note (c->ev, MESSAGE_NOTE_COUNTED_AS, species->key, c->counted_as->text, NULL);
   }
@@ -298,6 +304,12 @@ oxygen_factor (struct conversion *c, double measured, const char *what, double *
                                        share_text (ev->arena, A)), NULL);
   }
   *factor = (A - reference) / (A - measured);
+  RECORD (ev, .name = "factor to the reference oxygen", .formula = "k = (A - O_r)/(A - O_m)",
+          .value = *factor, .unit = "1", .source = "Directive 2010/75/EU, Annex VI part 4",
+          STEP_SYMBOLS (CONSTANT ("A", A, "mol/mol", ev->settings->is_set[SETTING_OXYGEN_IN_AIR]
+                                                       ? "as set" : "20.95 mol%, as shipped"),
+                        CONSTANT ("O_r", reference, "mol/mol", STEP_TYPED),
+                        SYMBOL ("O_m", measured, "mol/mol")));
   evaluation_touch (ev, TOUCH_OXYGEN);
   if (ev->describe && !ev->settings->is_set[SETTING_OXYGEN_IN_AIR]) {
     evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_OXYGEN_IN_AIR,

@@ -5,6 +5,7 @@
 #include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/record.h"
 #include "language/evaluate/wording.h"
 #include "property/calorific.h"
 #include "support/arena.h"
@@ -149,7 +150,18 @@ convert_energy (struct conversion *c, const struct composition *gas, double mole
                                                      c->ev->settings->combustion, false));
     standing.moisture = moisture_word (c->ev, gas);
   }
+  RECORD (c->ev, .name = "energy of", .of = c->what, .formula = "P = n H", .value = moles * H,
+          .in = c->unit, .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("n", moles, NULL), SYMBOL ("H", H, "J/mol")));
   return conversion_add (c, moles * H, &standing);
+}
+
+static void
+record_energy (struct evaluation *ev, double n, double H, double energy)
+{
+  RECORD (ev, .name = "energy", .formula = "P = n H", .value = energy, .unit = "J, or W",
+          .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("n", n, "mol, or mol/s"), SYMBOL ("H", H, "J/mol")));
 }
 
 /* The energy in a stream or in components of one.  */
@@ -161,6 +173,9 @@ energy_of (struct conversion *c, const struct value *v, bool net, double *energy
   if (v->kind == VALUE_STREAM) {
     bool done = heat_per_mole (c->ev, v->stream.gas, net, &H);
     *energy = done ? v->stream.moles * H : 0;
+    if (done) {
+      record_energy (c->ev, v->stream.moles, H, *energy);
+    }
     return done;
   }
   for (size_t i = 0; i < v->species.count; i++) {
@@ -171,6 +186,7 @@ energy_of (struct conversion *c, const struct value *v, bool net, double *energy
       return false;
     }
     *energy += n * H;
+    record_energy (c->ev, n, H, n * H);
   }
   return true;
 }
@@ -194,5 +210,8 @@ convert_energy_ratio (struct conversion *c)
                          "nothing can be divided by what does not burn", NULL);
   }
   standing.basis = net ? "by energy, net" : "by energy, gross";
+  RECORD (c->ev, .name = "ratio of energies", .formula = "r = P_a/P_b", .value = top / bottom,
+          .unit = "J/J", .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("P_a", top, NULL), SYMBOL ("P_b", bottom, NULL)));
   return conversion_add (c, top / bottom, &standing);
 }

@@ -6,6 +6,7 @@
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/evaluate/flow.h"
+#include "language/evaluate/record.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
 
@@ -15,6 +16,20 @@ struct host {
   double share;                            /* mol of the component per mol of that gas */
   struct stream state;                     /* T, p, Z of its own */
 };
+
+/* The share of a component in the gas it is in, before the target has its say.  */
+static void
+record_share (const struct conversion *c, double share)
+{
+  const struct value *v = c->value;
+  if (!v->of_stream || !(v->stream.moles > 0)) {
+    return;                              /* it is what there is of it in a mole */
+  }
+  RECORD (c->ev, .name = "share of", .of = v->part, .formula = "x = n_c/n", .value = share,
+          .unit = "mol/mol", .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("n_c", v->moles, moles_unit (v->flow)),
+                        SYMBOL ("n", v->stream.moles, moles_unit (v->stream.flow))));
+}
 
 static bool
 host_of (struct conversion *c, struct host *host)
@@ -45,14 +60,23 @@ host_of (struct conversion *c, struct host *host)
       return false;
     }
   }
+  record_share (c, host->share);
   if (fabs (y_target - y) <= 1e-15) {
     return true;
   }
   if (y >= 1) {
     return fault_set_at (c->ev->fault, MESSAGE_ONLY_WATER, c->at, NULL, NULL);
   }
-  host->share = v->species.at[0] == water ? (y_target > 0 ? y_target : host->share / (1 - y))
-                                          : host->share * (1 - y_target) / (1 - y);
+  const double wet = host->share;
+  const bool of_water = v->species.at[0] == water;
+  host->share = of_water ? (y_target > 0 ? y_target : host->share / (1 - y))
+                         : host->share * (1 - y_target) / (1 - y);
+  RECORD (c->ev, .name = "share at the water of the target",
+          .formula = of_water && y_target > 0 ? "x = y_t"
+                     : of_water ? "x = x_w/(1 - y)" : "x = x_w (1 - y_t)/(1 - y)",
+          .value = host->share, .unit = "mol/mol", .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("x_w", wet, "mol/mol"), SYMBOL ("y_t", y_target, "mol/mol"),
+                        SYMBOL ("y", y, "mol/mol")));
   host->gas = composition_wetted (c->ev->arena, host->gas, water, y_target, c->ev->fault);
   fault_place (c->ev->fault, c->at);
   return host->gas != NULL;
@@ -152,7 +176,11 @@ real_volume_share (struct conversion *c, const struct host *host, double *phi)
       *phi += v->species.at[k] == species ? host->gas->fraction[i] * Z : 0;
     }
   }
+  const double own = *phi;
   *phi /= sum;
+  RECORD (c->ev, .name = "share of the unmixed volumes", .formula = "phi = s_c/s", .value = *phi,
+          .unit = "m3/m3", .source = "ISO 14912:2003, phi_i = x_i Z_i/sum x_k Z_k",
+          STEP_SYMBOLS (SYMBOL ("s_c", own, "1"), SYMBOL ("s", sum, "1")));
   return true;
 }
 
@@ -174,6 +202,57 @@ note_none_stated (struct conversion *c)
   }
 }
 
+/* The share at the reference oxygen.  */
+static void
+record_corrected (const struct conversion *c, double share, double factor)
+{
+  if (!isnan (c->state.oxygen)) {
+    RECORD (c->ev, .name = "share at the reference oxygen", .formula = "x = k x_0",
+            .value = share * factor, .unit = "mol/mol", .source = STEP_DEFINITION,
+            STEP_SYMBOLS (SYMBOL ("k", factor, "1"), SYMBOL ("x_0", share, "mol/mol")));
+  }
+}
+
+/* By mass: M_c is the mass counted for a mole of the component.  */
+static void
+record_mass_share (const struct conversion *c, const struct composition *gas, double x,
+                   double per_mass, double w)
+{
+  if (!c->ev->workings) {
+    return;
+  }
+  record_molar_mass (c->ev, gas, NULL);
+  RECORD (c->ev, .name = "share by mass", .formula = "w = x M_c/M", .value = w, .unit = "kg/kg",
+          .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("x", x, "mol/mol"),
+                        CONSTANT ("M_c", per_mass, "kg/mol", STEP_WEIGHTS),
+                        SYMBOL ("M", gas->molar_mass, "kg/mol")));
+}
+
+/* Counted as another: PER of it for each mole.  */
+static void
+record_counted (const struct conversion *c, double x, double per, const char *unit, double si)
+{
+  if (c->counted_as) {
+    RECORD (c->ev, .name = "counted as", .of = c->counted_as->text, .formula = "q = x k",
+            .value = si, .unit = unit, .source = STEP_DEFINITION,
+            STEP_SYMBOLS (SYMBOL ("x", x, "mol/mol"), SYMBOL ("k", per, "mol/mol")));
+  }
+}
+
+static void
+record_per_volume (const struct conversion *c, double x, double per, double Vm, double si)
+{
+  const bool by_mass = dimension_equal (c->unit->dimension, DIMENSION_DENSITY);
+  RECORD (c->ev, .name = by_mass ? "mass per volume" : "amount per volume",
+          .formula = by_mass ? "c = x M_c/V" : "c = x k/V", .value = si,
+          .unit = by_mass ? "kg/m3" : "mol/m3", .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("x", x, "mol/mol"),
+                        CONSTANT (by_mass ? "M_c" : "k", per, by_mass ? "kg/mol" : "mol/mol",
+                                  by_mass ? STEP_WEIGHTS : NULL),
+                        SYMBOL ("V", Vm, "m3/mol")));
+}
+
 /* A share or a concentration of the component.  */
 static bool
 concentration (struct conversion *c)
@@ -191,8 +270,11 @@ concentration (struct conversion *c)
   struct standing standing = { c->what, c->ev->describe ? moisture_word (c->ev, host.gas) : NULL,
                                with_oxygen (c, NULL) };
   const struct unit *u = c->unit;
+  record_corrected (c, host.share, factor);
   if (u->ratio == RATIO_MASS) {
-    return conversion_add (c, x * per_mass / host.gas->molar_mass, &standing);
+    double w = x * per_mass / host.gas->molar_mass;
+    record_mass_share (c, host.gas, x, per_mass, w);
+    return conversion_add (c, w, &standing);
   }
   if (u->ratio == RATIO_VOLUME && (c->words & WORD_REAL)) {
     double phi;
@@ -205,6 +287,7 @@ concentration (struct conversion *c)
     if (u->ratio == RATIO_VOLUME && !standing.basis) {
       standing.basis = "ideal mixing: equal to mol% for a gas, not for a liquid";
     }
+    record_counted (c, x, per_moles, "1", x * per_moles);
     return conversion_add (c, x * per_moles, &standing);
   }
   struct counted_volume volume;
@@ -213,7 +296,9 @@ concentration (struct conversion *c)
   }
   standing.basis = with_oxygen (c, volume.basis);
   bool by_mass = dimension_equal (u->dimension, DIMENSION_DENSITY);
-  return conversion_add (c, x * (by_mass ? per_mass : per_moles) / volume.Vm, &standing);
+  double si = x * (by_mass ? per_mass : per_moles) / volume.Vm;
+  record_per_volume (c, x, by_mass ? per_mass : per_moles, volume.Vm, si);
+  return conversion_add (c, si, &standing);
 }
 
 /* Above this a share is no trace whose basis may be taken for another.  */
@@ -252,9 +337,17 @@ partial_flow (struct conversion *c, enum flow_basis basis)
   }
   if (basis == FLOW_MASS) {
     bool by_moles = v->species.count == 1 || c->counted_as;
-    return conversion_add (c, by_moles ? v->moles * per_mass : v->mass, &standing);
+    double mass = by_moles ? v->moles * per_mass : v->mass;
+    if (by_moles) {
+      RECORD (c->ev, .name = "mass of", .of = c->what, .formula = "m = n_c M_c", .value = mass,
+              .unit = mass_unit (v->flow), .source = STEP_DEFINITION,
+              STEP_SYMBOLS (SYMBOL ("n_c", v->moles, moles_unit (v->flow)),
+                            CONSTANT ("M_c", per_mass, "kg/mol", STEP_WEIGHTS)));
+    }
+    return conversion_add (c, mass, &standing);
   }
   if (basis == FLOW_MOLAR) {
+    record_counted (c, v->moles, per_moles, moles_unit (v->flow), v->moles * per_moles);
     return conversion_add (c, v->moles * per_moles, &standing);
   }
   struct counted_volume volume;
@@ -262,7 +355,12 @@ partial_flow (struct conversion *c, enum flow_basis basis)
     return false;
   }
   standing.basis = volume.basis;
-  return conversion_add (c, v->moles * per_moles * volume.Vm, &standing);
+  double part_volume = v->moles * per_moles * volume.Vm;
+  RECORD (c->ev, .name = "volume of", .of = c->what, .formula = "q = n_c k V",
+          .value = part_volume, .unit = volume_unit (v->flow), .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("n_c", v->moles, moles_unit (v->flow)),
+                        SYMBOL ("k", per_moles, "mol/mol"), SYMBOL ("V", volume.Vm, "m3/mol")));
+  return conversion_add (c, part_volume, &standing);
 }
 
 bool
@@ -382,24 +480,37 @@ convert_trace (struct conversion *c)
     return false;
   }
   double x = v->si * factor;
+  record_corrected (c, v->si, factor);
   if (v->measure.ratio == RATIO_MASS) {
-    return u->ratio == RATIO_MASS
-             ? conversion_add (c, x * per * M / v->species.at[0]->molar_mass, &standing)
-             : trace_needs_gas (c);
+    double w = x * per * M / v->species.at[0]->molar_mass;
+    if (c->counted_as) {
+      RECORD (c->ev, .name = "counted as", .of = c->counted_as->text, .formula = "w = w_0 k M/M_c",
+              .value = w, .unit = "kg/kg", .source = STEP_DEFINITION,
+              STEP_SYMBOLS (SYMBOL ("w_0", x, "kg/kg"), SYMBOL ("k", per, "mol/mol"),
+                            CONSTANT ("M", M, "kg/mol", STEP_WEIGHTS),
+                            CONSTANT ("M_c", v->species.at[0]->molar_mass, "kg/mol",
+                                      STEP_WEIGHTS)));
+    }
+    return u->ratio == RATIO_MASS ? conversion_add (c, w, &standing) : trace_needs_gas (c);
   }
   const struct composition *host = NULL;
   if (v->gas && !(host = trace_host (c, &x, &standing))) {
     return false;
   }
+  if (u->ratio == RATIO_MASS && !host) {
+    return trace_needs_gas (c);
+  }
   if (u->ratio == RATIO_MASS) {
-    return host ? conversion_add (c, x * per * M / host->molar_mass, &standing)
-                : trace_needs_gas (c);
+    double w = x * per * M / host->molar_mass;
+    record_mass_share (c, host, x, per * M, w);
+    return conversion_add (c, w, &standing);
   }
   if (u->ratio == RATIO_ENERGY) {
     return conversion_mismatch (c, "a concentration is told as a share or per volume");
   }
   if (u->ratio != RATIO_NONE) {
     standing.basis = with_oxygen (c, "by amount: the same at any temperature and pressure");
+    record_counted (c, x, per, "1", x * per);
     return conversion_add (c, x * per, &standing);
   }
   struct stream own = { .T = v->T, .p = v->p, .Z = UNSTATED };
@@ -409,5 +520,7 @@ convert_trace (struct conversion *c)
   }
   standing.basis = with_oxygen (c, volume.basis);
   bool by_mass = dimension_equal (u->dimension, DIMENSION_DENSITY);
-  return conversion_add (c, x * per * (by_mass ? M : 1) / volume.Vm, &standing);
+  double si = x * per * (by_mass ? M : 1) / volume.Vm;
+  record_per_volume (c, x, by_mass ? per * M : per, volume.Vm, si);
+  return conversion_add (c, si, &standing);
 }

@@ -5,6 +5,7 @@
 #include <string.h>
 #include "gas/composition.h"
 #include "language/evaluate/flow.h"
+#include "language/evaluate/record.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
 #include "units/constants.h"
@@ -15,6 +16,16 @@ static bool
 is_absolute (enum unit_sort sort)
 {
   return sort == UNIT_ABSOLUTE || sort == UNIT_GAUGE || sort == UNIT_VACUUM;
+}
+
+static void
+record_over_barometer (struct evaluation *ev, double p, double told, const char *formula)
+{
+  RECORD (ev, .name = "against the barometer", .formula = formula, .value = told, .unit = "Pa",
+          .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("p", p, "Pa"),
+                        CONSTANT ("p_site", ev->settings->site_pressure, "Pa",
+                                  barometer_source (ev->settings))));
 }
 
 /* Gauge, vacuum, absolute and bare: a bare one beside another sort is absolute, and said so.  */
@@ -35,9 +46,11 @@ convert_pressure (struct conversion *c)
   switch (c->unit->sort) {
   case UNIT_GAUGE:
     p -= ev->settings->trial.gauge_absolute ? 0 : site;
+    record_over_barometer (ev, v->si, p, "p_g = p - p_site");
     break;
   case UNIT_VACUUM:
     p = site - p;
+    record_over_barometer (ev, v->si, p, "p_v = p_site - p");
     break;
   case UNIT_SCALE:
     if (is_absolute (v->measure.sort) && ev->describe) {
@@ -124,7 +137,21 @@ ideal_moles_per (struct conversion *c, const struct measure *m, double T, double
     return false;
   }
   *per = p / (GAS_CONSTANT * T);
+  RECORD (ev, .name = "volume of a mole", .formula = "V = R T/p", .value = 1 / *per,
+          .unit = "m3/mol", .source = STEP_IDEAL_GAS,
+          STEP_SYMBOLS (STEP_R, SYMBOL ("T", T, "K"), SYMBOL ("p", p, "Pa")));
   return true;
+}
+
+/* From one way of counting a mole to another: V_f and V_t are what a mole has either way.  */
+static void
+record_ways (const struct conversion *c, const char *formula, double from, double to, double si)
+{
+  RECORD (c->ev, .name = "counted the other way", .formula = formula, .value = si,
+          .in = c->unit, .source = STEP_DEFINITION,
+          STEP_SYMBOLS ({ "q_0", c->value->si, NULL, NULL, c->value->unit },
+                        SYMBOL ("V_f", from, "of a mole, from"),
+                        SYMBOL ("V_t", to, "of a mole, to")));
 }
 
 /* A volume or flow between reference conditions, actual states and moles: an ideal gas.  */
@@ -152,6 +179,7 @@ convert_volume (struct conversion *c)
     standing.basis = actual_text (ev->arena, &(struct actual) { c->state.T, c->state.p, 1, "ideal",
                                                                 false });
   }
+  record_ways (c, "q = q_0 V_t/V_f", 1 / from_per, 1 / to_per, v->si * from_per / to_per);
   return conversion_add (c, v->si * from_per / to_per, &standing);
 }
 
@@ -166,6 +194,7 @@ convert_per_volume (struct conversion *c)
     return false;
   }
   struct standing standing = { c->what, NULL, c->ev->settings->family[c->unit->family].text };
+  record_ways (c, "q = q_0 V_f/V_t", from, to, v->si * from / to);
   return conversion_add (c, v->si * from / to, &standing);
 }
 
@@ -243,6 +272,21 @@ family_basis (struct conversion *c)
            : text;
 }
 
+/* From mass to mole or back.  */
+static void
+record_by_mole (const struct conversion *c, const char *formula, double si)
+{
+  const struct composition *gas = c->value->gas->closed;
+  if (!c->ev->workings) {
+    return;
+  }
+  record_molar_mass (c->ev, gas, NULL);
+  RECORD (c->ev, .name = "by mole", .formula = formula, .value = si, .in = c->unit,
+          .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("q_0", c->value->si, NULL),
+                        SYMBOL ("M", gas->molar_mass, "kg/mol")));
+}
+
 bool
 convert_quantity (struct conversion *c)
 {
@@ -273,10 +317,12 @@ convert_quantity (struct conversion *c)
                                  dimension_times (d, DIMENSION_AMOUNT))) {
     /* A property per mass told per mole.  */
     struct standing standing = { c->what, moisture_word (c->ev, v->gas->closed), v->basis };
+    record_by_mole (c, "q = q_0 M", v->si * v->gas->closed->molar_mass);
     return conversion_add (c, v->si * v->gas->closed->molar_mass, &standing);
   } else if (!same && v->gas && v->gas->closed && dimension_equal (m->dimension, DIMENSION_DENSITY)
              && dimension_equal (d, DIMENSION_MOLAR_DENSITY) && c->unit->family_power == 0) {
     struct standing standing = { c->what, moisture_word (c->ev, v->gas->closed), v->basis };
+    record_by_mole (c, "q = q_0/M", v->si / v->gas->closed->molar_mass);
     return conversion_add (c, v->si / v->gas->closed->molar_mass, &standing);
   } else if (same && m->family_power == -1 && c->unit->family_power == -1
              && m->family != c->unit->family) {
@@ -350,5 +396,6 @@ convert_specific (struct conversion *c)
     return conversion_mismatch (c, "the units measure different things");
   }
   struct standing standing = { c->what, NULL, family_basis (c) };
+  record_ways (c, "q = q_0 V_f/V_t", from_per, to_per, v->si * from_per / to_per);
   return conversion_add (c, v->si * from_per / to_per, &standing);
 }

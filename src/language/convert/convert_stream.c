@@ -5,8 +5,20 @@
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/evaluate/flow.h"
+#include "language/evaluate/record.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
+
+static void
+record_dried (const struct conversion *c, const struct stream *wet, const struct stream *dry)
+{
+  const char *unit = moles_unit (wet->flow);
+  RECORD (c->ev, .name = "amount without its water", .formula = "n_dry = n (1 - y)",
+          .value = dry->moles, .unit = unit, .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("n", wet->moles, unit),
+                        SYMBOL ("y", composition_fraction (wet->gas, c->ev->session->water),
+                                "mol/mol")));
+}
 
 /* The stream as the target wants it counted: without its water, or with the moisture of the
    target's state; its dry flow stays.                                                           */
@@ -15,10 +27,13 @@ as_counted (struct conversion *c, struct stream *stream)
 {
   const struct species *water = c->ev->session->water;
   if ((c->words & WORD_DRY) && composition_fraction (stream->gas, water) > 0) {
-    if (!stream_with_water (c->ev->arena, stream, water, 0, stream, c->ev->fault)) {
+    const struct stream wet = *stream;
+    if (!stream_with_water (c->ev->arena, &wet, water, 0, stream, c->ev->fault)) {
       fault_place (c->ev->fault, c->at);
       return false;
     }
+    record_wetting (c->ev, wet.gas, stream->gas);
+    record_dried (c, &wet, stream);
     return true;
   }
   if (!c->has_state || c->state.moisture == MOISTURE_NONE || (c->words & WORD_DRY)) {
@@ -108,8 +123,15 @@ convert_stream (struct conversion *c)
                                                                      c->ev->session->water)));
   }
   if (basis == FLOW_MASS) {
-    return conversion_add (c, stream.moles * constants_molar_mass (c->ev, stream.gas),
-                           &standing);
+    double M = constants_molar_mass (c->ev, stream.gas), mass = stream.moles * M;
+    if (c->ev->workings) {
+      record_molar_mass (c->ev, stream.gas, c->what);
+      RECORD (c->ev, .name = "mass of", .of = c->what, .formula = "m = n M", .value = mass,
+              .unit = mass_unit (flow), .source = STEP_DEFINITION,
+              STEP_SYMBOLS (SYMBOL ("n", stream.moles, moles_unit (flow)),
+                            SYMBOL ("M", M, "kg/mol")));
+    }
+    return conversion_add (c, mass, &standing);
   }
   if (basis == FLOW_MOLAR) {
     return conversion_add (c, stream.moles, &standing);
@@ -121,7 +143,12 @@ convert_stream (struct conversion *c)
   standing.basis = volume.basis && standing.basis
                      ? arena_format (c->ev->arena, "%s, %s", volume.basis, standing.basis)
                      : volume.basis;
-  return conversion_add (c, stream.moles * volume.Vm, &standing);
+  double volume_of_all = stream.moles * volume.Vm;
+  RECORD (c->ev, .name = "volume of", .of = c->what, .formula = "q = n V", .value = volume_of_all,
+          .unit = volume_unit (flow), .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("n", stream.moles, moles_unit (flow)),
+                        SYMBOL ("V", volume.Vm, "m3/mol")));
+  return conversion_add (c, volume_of_all, &standing);
 }
 
 bool

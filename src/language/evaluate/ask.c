@@ -6,10 +6,12 @@
 #include "gas/composition.h"
 #include "language/evaluate/uncertainty.h"
 #include "language/evaluate/wording.h"
+#include "language/kept.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/memory.h"
 #include "units/constants.h"
+#include "units/workings.h"
 
 /* ---- What the usual alternative would do ---- */
 
@@ -271,8 +273,14 @@ question_answer (struct evaluation *ev, const struct statement *s)
   struct value value;
   struct figures figures = { NULL, 0, 0 };
   struct result *result = ev->result;
-  if (!question_figures (ev, s, &value, &figures)
-      || !add_uncertainties (ev, s, &figures, add_answers (result, &figures))) {
+  struct workings steps;
+  workings_init (&steps, ev->arena);
+  ev->workings = &steps;
+  if (!question_figures (ev, s, &value, &figures)) {
+    return false;
+  }
+  struct answer *answers = add_answers (result, &figures);
+  if (!add_uncertainties (ev, s, &figures, answers)) {
     return false;
   }
   question_tell_taken (ev, s, &figures);
@@ -284,6 +292,7 @@ question_answer (struct evaluation *ev, const struct statement *s)
     definition_tell (ev->session, ev->used[i], false, result);
     file_tell_changes (ev->session, ev->used[i], result);
   }
+  kept_add (ev->session, &(struct asked) { ev, s, &value, answers, figures.count }, result);
   return true;
 }
 

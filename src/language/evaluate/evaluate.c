@@ -7,6 +7,7 @@
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/evaluate/flow.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
@@ -83,6 +84,7 @@ quantity_node (struct evaluation *ev, const struct node *node, struct value *out
   }
   if (unit->sort == UNIT_GAUGE || unit->sort == UNIT_VACUUM) {
     out->si = above_barometer (ev, node, out->si);
+    record_typed (ev, node, number, out->si);
     return out->si >= 0
            || fault_set_at (ev->fault, MESSAGE_RANGE, node->at,
                             "an absolute pressure below zero: less than a perfect vacuum", NULL);
@@ -91,6 +93,7 @@ quantity_node (struct evaluation *ev, const struct node *node, struct value *out
     return fault_set_at (ev->fault, MESSAGE_RANGE, node->at,
                          "a temperature below absolute zero", NULL);
   }
+  record_typed (ev, node, number, out->si);
   return true;
 }
 
@@ -276,6 +279,7 @@ evaluate (struct evaluation *ev, const struct node *node, const struct state *st
     out->measure = (struct measure) { .dimension = DIMENSION_PRESSURE, .sort = UNIT_ABSOLUTE };
     evaluation_touch (ev, TOUCH_SITE);
     assume_site_pressure (ev);
+    record_barometer (ev, out->si);
     break;
   case NODE_NORMALISED:
   case NODE_DRIED:

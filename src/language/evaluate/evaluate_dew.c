@@ -6,6 +6,7 @@
 #include "eos/eos.h"
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
@@ -61,6 +62,28 @@ dew_of_hydrocarbons (struct evaluation *ev, const struct composition *gas, doubl
   return false;
 }
 
+/* Where the first drop, with the shares z_i, has the fugacities of the gas.  */
+static void
+record_dew (struct evaluation *ev, const struct composition *gas, double p,
+            const struct dew_point *dew)
+{
+  if (!ev->workings) {
+    return;
+  }
+  const char **terms = ARENA_ARRAY (ev->workings->arena, gas->count, const char *);
+  const char **sources = ARENA_ARRAY (ev->workings->arena, gas->count, const char *);
+  for (size_t i = 0; i < gas->count; i++) {
+    terms[i] = gas->species[i]->key;
+    sources[i] = gas->species[i]->source;
+  }
+  RECORD (ev, .name = "hydrocarbon dew point", .formula = "f_i(T, p, x) = f_i(T, p, z)",
+          .solved = "Newton's steps along the branch of dew points", .value = dew->T, .unit = "K",
+          .source = equation_peng_robinson.source, .term_count = (unsigned) gas->count,
+          .terms = terms, STEP_SYMBOLS (SYMBOL ("p", p, "Pa")),
+          STEP_COLUMNS ({ "x_i", gas->fraction, "mol/mol", NULL, NULL },
+                        { "z_i", dew->liquid, "mol/mol", NULL, sources }));
+}
+
 bool
 property_dew_point (struct evaluation *ev, const struct property_question *q, struct value *out)
 {
@@ -77,6 +100,7 @@ property_dew_point (struct evaluation *ev, const struct property_question *q, st
     fault_place (ev->fault, q->node->at);
     return false;
   }
+  record_dew (ev, gas, q->p, &dew);
   if (!property_answer (ev, q, dew.T, out)) {
     return false;
   }

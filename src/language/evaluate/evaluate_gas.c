@@ -6,6 +6,7 @@
 #include "gas/analysis.h"
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/evaluate_treat.h"
 #include "language/evaluate/wording.h"
@@ -67,6 +68,9 @@ gas_of_analysis (struct evaluation *ev, const struct analysis *analysis,
     note (ev, MESSAGE_NOTE_SCALED, named->name ? named->name : "the list",
           gas_share_text (ev, gas->scaled, 1),
           gas_total_text (ev, analysis, analysis_total (analysis)));
+  }
+  if (gas->closed) {
+    record_closed (ev, analysis, gas->closed, gas->scaled, named->name);
   }
   return gas;
 }
@@ -172,8 +176,10 @@ change_stream (struct evaluation *ev, const struct node *node, struct value *v)
     return false;
   }
   note_first_water (ev, v->stream.gas, gas);
-  v->stream.moles = dry / (1 - composition_fraction (gas, ev->session->water));
+  double y = composition_fraction (gas, ev->session->water);
+  v->stream.moles = dry / (1 - y);
   v->stream.gas = gas;
+  record_rewetted (ev, dry, y, &v->stream);
   return true;
 }
 
@@ -191,6 +197,10 @@ change_analysis (struct evaluation *ev, const struct change_of *c, struct value 
     after = gas_without (ev, c, before);
   } else {
     after = analysis_dried (ev->arena, before, ev->session->water, &did, ev->fault);
+    if (after) {
+      record_treatment (ev, &(struct treated) { .name = "dried:", .of = c->name, .before = before,
+                                                .after = after, .did = &did });
+    }
     if (after && ev->result && did.removed > 0) {
       note (ev, MESSAGE_NOTE_REMOVED, c->name, "H2O", gas_total_text (ev, before, did.removed));
     }
@@ -301,10 +311,12 @@ evaluate_keeping (struct evaluation *ev, const struct node *node, struct value *
   for (size_t i = 0; i < gas->count; i++) {
     kept[i] = isnan (kept[i]) ? rest : kept[i];
   }
-  if (!stream_keeping (ev->arena, &out->stream, kept, &out->stream, ev->fault)) {
+  struct stream whole = out->stream;
+  if (!stream_keeping (ev->arena, &whole, kept, &out->stream, ev->fault)) {
     fault_place (ev->fault, node->at);
     return false;
   }
+  record_keeping (ev, &whole, kept, &out->stream);
   if (ev->subject) {
     note (ev, MESSAGE_NOTE_KEPT, ev->subject,
           node->a->kind == NODE_NAME ? node->a->text : "its source",

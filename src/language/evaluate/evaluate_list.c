@@ -7,6 +7,7 @@
 #include "gas/analysis.h"
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
@@ -210,6 +211,11 @@ concentration (struct evaluation *ev, const struct node *part, const struct part
   }
   out->basis = AMOUNT_MOLAR_CONCENTRATION;
   out->amount = by_mass ? f->si * Vm / molar_mass : f->si * Vm;
+  RECORD (ev, .name = "share of", .of = part->text,
+          .formula = by_mass ? "a = c V/M" : "a = c V", .value = out->amount, .unit = "mol/mol",
+          .source = STEP_DEFINITION,
+          STEP_SYMBOLS (CONSTANT ("c", f->si, by_mass ? "kg/m3" : "mol/m3", STEP_TYPED),
+                        SYMBOL ("V", Vm, "m3/mol"), SYMBOL ("M", molar_mass, "kg/mol")));
   return true;
 }
 
@@ -411,6 +417,7 @@ evaluate_list (struct evaluation *ev, const struct node *list, struct value *out
     return false;
   }
   struct gas_value named = { .name = ev->subject, .basis = list->unit, .list = list };
+  record_list (ev, analysis, named.name);
   *out = value_number (UNSTATED);
   out->kind = VALUE_GAS;
   struct gas_value *gas = gas_of_analysis (ev, analysis, &named);

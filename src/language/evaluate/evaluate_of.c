@@ -6,6 +6,7 @@
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/evaluate/flow.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
@@ -56,6 +57,13 @@ select_by_name (struct evaluation *ev, const struct node *node)
   return SELECT_FAILED;
 }
 
+/* What a node is called in the record.  */
+static const char *
+name_of (const struct node *node)
+{
+  return node->kind == NODE_NAME ? node->text : "the gas";
+}
+
 /* ---- Components ---- */
 
 static void
@@ -67,6 +75,38 @@ part_amounts (struct value *part, const struct composition *gas, double moles)
     part->moles += n;
     part->mass += n * part->species.at[i]->molar_mass;
   }
+}
+
+/* What there is of a component: n_c = n sum x_i, and its mass.  */
+static void
+record_part (struct evaluation *ev, const struct value *part, const struct composition *gas,
+             double moles, const char *of)
+{
+  const size_t n = part->species.count;
+  if (!ev->workings) {
+    return;
+  }
+  double *x = ARENA_ARRAY (ev->arena, n, double), *M = ARENA_ARRAY (ev->arena, n, double);
+  const char **terms = ARENA_ARRAY (ev->workings->arena, n, const char *);
+  const bool whole = !part->of_stream;
+  const char *unit = whole ? "mol/mol" : moles_unit (part->flow);
+  for (size_t i = 0; i < n; i++) {
+    x[i] = composition_fraction (gas, part->species.at[i]);
+    M[i] = part->species.at[i]->molar_mass;
+    terms[i] = part->species.at[i]->key;
+  }
+  const char *name = arena_format (ev->arena, whole ? "%s of" : "amount of %s of", part->part);
+  RECORD (ev, .name = name, .of = of,
+          .formula = whole ? "x = sum(x_i)" : "n_c = n sum(x_i)", .value = part->moles,
+          .unit = unit, .source = "the composition above",
+          .term_count = (unsigned) n, .terms = terms, STEP_SYMBOLS (SYMBOL ("n", moles, unit)),
+          STEP_COLUMNS ({ "x_i", x, "mol/mol", NULL, NULL }));
+  RECORD (ev, .name = arena_format (ev->arena, "mass of %s of", part->part), .of = of,
+          .formula = "m_c = n sum(x_i M_i)", .value = part->mass,
+          .unit = whole ? "kg/mol" : mass_unit (part->flow), .source = STEP_DEFINITION,
+          .term_count = (unsigned) n, .terms = terms, STEP_SYMBOLS (SYMBOL ("n", moles, unit)),
+          STEP_COLUMNS ({ "x_i", x, "mol/mol", NULL, NULL },
+                        { "M_i", M, "kg/mol", STEP_WEIGHTS, NULL }));
 }
 
 static bool
@@ -91,6 +131,7 @@ part_of (struct evaluation *ev, const struct node *node, const struct state *sta
     part.unit = whole.unit;
     part.stream = whole.stream;
     part_amounts (&part, whole.stream.gas, whole.stream.moles);
+    record_part (ev, &part, whole.stream.gas, whole.stream.moles, name_of (node->b));
   } else if (whole.kind == VALUE_GAS) {
     const struct composition *gas = gas_composition (ev, whole.gas, node->b->at);
     if (!gas) {
@@ -101,6 +142,7 @@ part_of (struct evaluation *ev, const struct node *node, const struct state *sta
       quantity_at_state (&part, state);
     }
     part_amounts (&part, gas, 1);
+    record_part (ev, &part, gas, 1, name_of (node->b));
   } else {
     return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, node->b->at,
                          "a component is one of a gas or of a stream", NULL);
@@ -126,13 +168,20 @@ share_of (struct evaluation *ev, const struct node *node, const struct value *sh
     if (share->si < 0) {
       return fault_set_at (ev->fault, MESSAGE_RANGE, node->a->at, "a share below zero", NULL);
     }
+    double all = whole->stream.moles;
+    const char *unit = moles_unit (whole->stream.flow);
     whole->stream = stream_share (&whole->stream, share->si);
+    RECORD (ev, .name = "share of", .of = name_of (node->b), .formula = "n = s n_0",
+            .value = whole->stream.moles, .unit = unit, .source = STEP_DEFINITION,
+            STEP_SYMBOLS (SYMBOL ("s", share->si, "1"), SYMBOL ("n_0", all, unit)));
     if (ev->subject) {
       note (ev, MESSAGE_NOTE_SHARE, ev->subject,
             node->b->kind == NODE_NAME ? node->b->text : "what it is taken from", NULL);
     }
     return !state || state_apply (ev, state, &whole->stream, node->at);
   }
+  const double moles = whole->moles, mass = whole->mass;
+  const char *unit = whole->of_stream ? moles_unit (whole->flow) : "mol/mol";
   whole->moles *= share->si;
   whole->mass *= share->si;
   if (ev->result && share->measure.ratio == RATIO_MOLE && share->si < TRACE_SHARE
@@ -140,6 +189,15 @@ share_of (struct evaluation *ev, const struct node *node, const struct value *sh
     note (ev, MESSAGE_NOTE_SHARE_OF_PART, share_text (ev->arena, share->si), node->b->a->text,
           NULL);
   }
+  RECORD (ev, .name = "share of", .of = whole->part, .formula = "n = s n_0",
+          .value = whole->moles, .unit = unit, .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("s", share->si, "1"), SYMBOL ("n_0", moles, unit)));
+  RECORD (ev, .name = "share of the mass of", .of = whole->part, .formula = "m = s m_0",
+          .value = whole->mass, .unit = whole->of_stream ? mass_unit (whole->flow) : "kg/mol",
+          .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("s", share->si, "1"),
+                        SYMBOL ("m_0", mass,
+                                whole->of_stream ? mass_unit (whole->flow) : "kg/mol")));
   return true;
 }
 
@@ -233,8 +291,13 @@ trace_of (struct evaluation *ev, const struct node *node, const struct value *qu
     trace.si = quantity->si;
   } else {
     trace.measure.ratio = RATIO_MOLE;
-    trace.si = dimension_equal (m->dimension, CONCENTRATION_BY_MOLES)
-                 ? quantity->si * Vm : quantity->si * Vm / molar_mass;
+    bool by_moles = dimension_equal (m->dimension, CONCENTRATION_BY_MOLES);
+    trace.si = by_moles ? quantity->si * Vm : quantity->si * Vm / molar_mass;
+    RECORD (ev, .name = "share of", .of = trace.part, .formula = by_moles ? "x = c V" : "x = c V/M",
+            .value = trace.si, .unit = "mol/mol", .source = STEP_DEFINITION,
+            STEP_SYMBOLS (SYMBOL ("c", quantity->si, by_moles ? "mol/m3" : "kg/m3"),
+                          SYMBOL ("V", Vm, "m3/mol"),
+                          CONSTANT ("M", molar_mass, "kg/mol", STEP_WEIGHTS)));
   }
   if (host && trace.measure.ratio == RATIO_MASS) {
     const struct composition *gas = gas_composition (ev, host, node->at);
@@ -243,6 +306,12 @@ trace_of (struct evaluation *ev, const struct node *node, const struct value *qu
     }
     trace.si *= gas->molar_mass / molar_mass;
     trace.measure.ratio = RATIO_MOLE;
+    record_molar_mass (ev, gas, host->name);
+    RECORD (ev, .name = "share of", .of = trace.part, .formula = "x = w M/M_c", .value = trace.si,
+            .unit = "mol/mol", .source = STEP_DEFINITION,
+            STEP_SYMBOLS (SYMBOL ("w", quantity->si, "kg/kg"),
+                          SYMBOL ("M", gas->molar_mass, "kg/mol"),
+                          CONSTANT ("M_c", molar_mass, "kg/mol", STEP_WEIGHTS)));
   }
   trace_wets (ev, node->a, host, &trace);
   if (!(trace.si >= 0 && trace.si <= 1)) {
@@ -288,7 +357,8 @@ stream_of (struct evaluation *ev, const struct node *node, const struct value *q
   } else if (!(source.gas = gas_composition (ev, whole->gas, node->b->at))) {
     return false;
   }
-  struct flow_figure figure = { quantity, node->a, state, &source };
+  struct flow_figure figure = { quantity, node->a, state, &source,
+                                node->b->kind == NODE_NAME ? node->b->text : NULL };
   if (!flow_from_quantity (ev, &figure, node->b->at, &whole->stream)) {
     return false;
   }

@@ -6,6 +6,7 @@
 #include "gas/analysis.h"
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "property/calorific.h"
@@ -73,6 +74,16 @@ by_volume (struct evaluation *ev, const struct property_question *q, struct valu
   }
   double si = q->property == PROPERTY_Z ? Z
               : q->property == PROPERTY_MOLAR_VOLUME ? Vm : constants_molar_mass (ev, q->gas) / Vm;
+  if (ev->workings && q->property == PROPERTY_DENSITY) {
+    record_molar_mass (ev, q->gas, NULL);
+    RECORD (ev, .name = "density", .formula = "rho = M/V", .value = si, .unit = "kg/m3",
+            .source = STEP_DEFINITION,
+            STEP_SYMBOLS (SYMBOL ("M", q->gas->molar_mass, "kg/mol"),
+                          SYMBOL ("V", Vm, "m3/mol")));
+  } else if (q->property == PROPERTY_Z && (!isnan (q->Z) || strcmp (model, "ideal") == 0)) {
+    RECORD (ev, .name = "compression factor", .formula = "", .value = Z, .unit = "1",
+            .source = isnan (q->Z) ? STEP_IDEAL_GAS : STEP_TYPED);
+  }
   if (!property_answer (ev, q, si, out)) {
     return false;
   }
@@ -95,7 +106,7 @@ by_water (struct evaluation *ev, const struct property_question *q, struct value
                                 enhancement_is_for (q->gas)
                                 && ev->settings->model != GAS_MODEL_IDEAL };
   struct moist_answer moist;
-  bool done = moist_answer (&ask, &moist, NULL, ev->fault);
+  bool done = moist_answer (&ask, &moist, ev->workings, ev->fault);
   if (!done) {
     fault_place (ev->fault, q->node->at);
     return false;
@@ -129,6 +140,10 @@ water_content (struct evaluation *ev, const struct property_question *q, const s
   out->species = (struct species_set) { { water }, 1 };
   out->moles = y;
   out->mass = y * water->molar_mass;
+  RECORD (ev, .name = "water in a mole of the gas", .formula = "m = y M", .value = out->mass,
+          .unit = "kg/mol", .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("y", y, "mol/mol"),
+                        CONSTANT ("M", water->molar_mass, "kg/mol", STEP_WEIGHTS)));
   out->T = q->T;
   out->p = q->p;
   if (of->kind == VALUE_STREAM) {
@@ -155,6 +170,7 @@ stated_total (struct evaluation *ev, const struct property_question *q, const st
     return false;
   }
   *out = value_number (analysis_total (analysis));
+  record_list (ev, analysis, of->gas->name);
   out->unit = unit_find (ev->session->vocabulary.units, unit, strlen (unit), ev->fault);
   if (!out->unit) {
     return false;
@@ -176,7 +192,13 @@ partial_pressure (struct evaluation *ev, const struct property_question *q, cons
   for (size_t i = 0; i < of->species.count; i++) {
     x += composition_fraction (q->gas, of->species.at[i]);
   }
-  return property_needs (ev, q, false, true) && property_answer (ev, q, x * q->p, out);
+  if (!property_needs (ev, q, false, true)) {
+    return false;
+  }
+  RECORD (ev, .name = "partial pressure of", .of = of->part, .formula = "p_c = x p",
+          .value = x * q->p, .unit = "Pa", .source = "Dalton's law",
+          STEP_SYMBOLS (SYMBOL ("x", x, "mol/mol"), SYMBOL ("p", q->p, "Pa")));
+  return property_answer (ev, q, x * q->p, out);
 }
 
 static bool
@@ -191,6 +213,13 @@ relative_density (struct evaluation *ev, const struct property_question *q, stru
       fault_place (ev->fault, q->node->at);
       return false;
     }
+  }
+  if (ev->workings && !real) {
+    record_molar_mass (ev, q->gas, NULL);
+    RECORD (ev, .name = "relative density", .formula = "d = M/M_air", .value = d, .unit = "1",
+            .source = STEP_DEFINITION,
+            STEP_SYMBOLS (SYMBOL ("M", q->gas->molar_mass, "kg/mol"),
+                          CONSTANT ("M_air", air, "kg/mol", heat_standard (ev))));
   }
   if (!property_answer (ev, q, d, out)) {
     return false;
@@ -241,6 +270,9 @@ own_figure (struct evaluation *ev, const struct property_question *q, const stru
                 "all its parts have");
     return false;
   }
+  RECORD (ev, .name = T ? "temperature of" : "pressure of",
+          .of = q->node->b->kind == NODE_NAME ? q->node->b->text : "the stream", .formula = "",
+          .value = T ? q->T : q->p, .unit = T ? "K" : "Pa", .source = "the state of the stream");
   return property_answer (ev, q, T ? q->T : q->p, out);
 }
 
@@ -300,6 +332,7 @@ dispatch (struct evaluation *ev, const struct property_question *q, const struct
 {
   switch (q->property) {
   case PROPERTY_MOLAR_MASS:
+    record_molar_mass (ev, q->gas, NULL);
     return property_answer (ev, q, constants_molar_mass (ev, q->gas), out);
   case PROPERTY_RELATIVE_DENSITY:
     return relative_density (ev, q, out);

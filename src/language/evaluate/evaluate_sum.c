@@ -5,6 +5,7 @@
 #include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "stream/blend.h"
@@ -46,8 +47,10 @@ same_family (struct evaluation *ev, const struct value *a, struct value *b)
   struct conditions f = ev->settings->family[from].at, t = ev->settings->family[to].at;
   assume_family (ev, from);
   assume_family (ev, to);
+  const double before = b->si;
   b->si *= pow ((t.T / t.p) / (f.T / f.p), a->measure.family_power);
   b->measure.family = to;
+  record_restated (ev, b, before, from, a->measure.family_power);
 }
 
 /* A bare number beside a share is one of the same kind: e - 1, where e is in mol/mol.  */
@@ -102,7 +105,9 @@ add_quantities (struct evaluation *ev, const struct node *node, struct value *a,
     a->unit = b->unit;
   }
   /* A vacuum grows when pressure falls; both are absolute here, so a difference just adds.  */
+  const double left_si = a->si;
   a->si = minus ? a->si - b->si : a->si + b->si;
+  record_sum (ev, a, left_si, b->si, minus);
   if (!a->basis || !b->basis || strcmp (a->basis, b->basis) != 0) {
     a->basis = NULL;                  /* counted differently: the sum is counted as neither */
   }
@@ -143,7 +148,7 @@ blend_temperature (struct evaluation *ev, const struct node *node, const struct 
     return true;
   }
   fault_init (&fault, ev->arena);
-  if (!stream_blend_temperature (ev->session->properties, one, other, &t, NULL, &fault)) {
+  if (!stream_blend_temperature (ev->session->properties, one, other, &t, ev->workings, &fault)) {
     if (fault.kind != MESSAGE_MODEL_LACKS) {
       return fault_set_at (ev->fault, fault.kind, node->at, fault.fact[0], fault.fact[1]);
     }
@@ -177,6 +182,7 @@ add_streams (struct evaluation *ev, const struct node *node, struct value *a,
     fault_place (ev->fault, node->b->at);
     return false;
   }
+  record_blend (ev, &before, &b->stream, &a->stream, node->kind == NODE_ADD ? 1 : -1);
   return node->kind == NODE_SUBTRACT || blend_temperature (ev, node, &before, &b->stream, a);
 }
 
@@ -186,9 +192,11 @@ add_parts (struct evaluation *ev, const struct node *node, struct value *a, cons
   if (a->of_stream != b->of_stream || (a->of_stream && a->flow != b->flow)) {
     return wrong (ev, MESSAGE_KIND_WRONG, node->b, "a flow and a share do not add up");
   }
+  struct value before = *a;
   double sign = node->kind == NODE_SUBTRACT ? -1 : 1;
   a->moles += sign * b->moles;
   a->mass += sign * b->mass;
+  record_part_sum (ev, &before, b, a);
   return true;
 }
 
@@ -286,20 +294,24 @@ changes_flow (const struct value *v, bool flow, bool divide, double *by)
 static bool
 scale_value (struct evaluation *ev, const struct node *node, struct value *v, double factor)
 {
+  const struct value before = *v;
   switch (v->kind) {
   case VALUE_STREAM:
     if (factor < 0) {
       return wrong (ev, MESSAGE_RANGE, node, "a flow or an amount below zero");
     }
     v->stream.moles *= factor;
+    record_scaled (ev, &before, v, factor);
     return true;
   case VALUE_PART:
     v->moles *= factor;
     v->mass *= factor;
+    record_scaled (ev, &before, v, factor);
     return true;
   case VALUE_TRACE:
   case VALUE_SPECIFIC:
     v->si *= factor;
+    record_scaled (ev, &before, v, factor);
     return true;
   case VALUE_QUANTITY:
   case VALUE_GAS:
@@ -327,7 +339,9 @@ multiply_quantities (struct evaluation *ev, const struct node *node, struct valu
   if (divide && fpclassify (b->si) == FP_ZERO) {
     return wrong (ev, MESSAGE_RANGE, node->b, "nothing can be divided by zero");
   }
+  const double left_si = a->si;
   a->si = divide ? a->si / b->si : a->si * b->si;
+  record_product (ev, a, b, left_si, divide);
   if (b_plain) {
     return true;
   }
@@ -381,6 +395,7 @@ divide_likes (struct evaluation *ev, const struct node *node, struct value *a,
   a->bottom = &kept[1];
   a->moles = top[0] / bottom[0];
   a->mass = top[1] / bottom[1];
+  record_ratio (ev, a, top, bottom, flow[0]);
   return true;
 }
 
@@ -405,7 +420,9 @@ multiply (struct evaluation *ev, const struct node *node, struct value *a, struc
     return multiply_quantities (ev, node, a, b);
   }
   if (is_number (a) && is_number (b)) {
-    *a = value_number (divide ? number_of (a) / number_of (b) : number_of (a) * number_of (b));
+    const struct value left = value_number (number_of (a)), right = value_number (number_of (b));
+    *a = value_number (divide ? left.si / right.si : left.si * right.si);
+    record_product (ev, a, &right, left.si, divide);
     return true;
   }
   if (is_number (b)) {
@@ -440,6 +457,7 @@ function (struct evaluation *ev, const struct node *node, struct value *out)
   }
   if (node->kind == NODE_NEGATE) {
     if (v.kind == VALUE_QUANTITY && !is_point (&v)) {
+      record_function (ev, "the other sign", "b = -a", v.si, -v.si);
       v.si = -v.si;
       *out = v;
       return true;
@@ -457,6 +475,11 @@ function (struct evaluation *ev, const struct node *node, struct value *out)
   }
   *out = value_number (node->kind == NODE_SQRT ? sqrt (x) : node->kind == NODE_LN ? log (x)
                                                                                  : exp (x));
+  record_function (ev, node->kind == NODE_SQRT ? "square root" : node->kind == NODE_LN
+                       ? "natural logarithm" : "exponential",
+                   node->kind == NODE_SQRT ? "b = sqrt(a)" : node->kind == NODE_LN ? "b = ln(a)"
+                                                                                 : "b = exp(a)",
+                   x, out->si);
   return true;
 }
 

@@ -6,6 +6,7 @@
 #include "eos/eos.h"
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "property/flammability.h"
@@ -18,12 +19,61 @@
 
 struct heats { double cp, cv, kappa, w; const char *how; };
 
+/* What is asked, from the molar heat capacity of the ideal gas.  */
+static void
+record_ideal (struct evaluation *ev, const struct property_question *q, const struct heats *h)
+{
+  if (!ev->workings || q->property == PROPERTY_CP) {
+    return;
+  }
+  RECORD (ev, .name = "heat capacity at constant volume", .formula = "c_v = c_p - R",
+          .value = h->cv, .unit = "J/(mol K)", .source = "ideal gas, Mayer's relation",
+          STEP_SYMBOLS (SYMBOL ("c_p", h->cp, "J/(mol K)"), STEP_R));
+  if (q->property == PROPERTY_CV) {
+    return;
+  }
+  RECORD (ev, .name = "isentropic exponent", .formula = "kappa = c_p/c_v", .value = h->kappa,
+          .unit = "1", .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("c_p", h->cp, "J/(mol K)"), SYMBOL ("c_v", h->cv, "J/(mol K)")));
+  if (q->property == PROPERTY_SPEED_OF_SOUND) {
+    record_molar_mass (ev, q->gas, NULL);
+    RECORD (ev, .name = "speed of sound", .formula = "w = sqrt(kappa R T/M)", .value = h->w,
+            .unit = "m/s", .source = "ideal gas, Laplace's equation",
+            STEP_SYMBOLS (SYMBOL ("kappa", h->kappa, "1"), STEP_R, SYMBOL ("T", q->T, "K"),
+                          SYMBOL ("M", q->gas->molar_mass, "kg/mol")));
+  }
+}
+
+/* By derivatives of the Helmholtz energy, which an equation of reference gives for itself.  */
+static void
+record_real (struct evaluation *ev, const struct property_question *q,
+             const struct eos_state *state, const struct heats *h)
+{
+  static const struct { const char *name, *formula, *unit; } told[PROPERTY_COUNT] = {
+    [PROPERTY_CP] = { "heat capacity at constant pressure",
+                      "c_p/R = -tau^2 a_tt + (1 + d a_d - d tau a_dt)^2/(1 + 2 d a_d + d^2 a_dd)",
+                      "J/(mol K)" },
+    [PROPERTY_CV] = { "heat capacity at constant volume", "c_v/R = -tau^2 a_tt", "J/(mol K)" },
+    [PROPERTY_KAPPA] = { "isentropic exponent", "kappa = -(v/p) (dp/dv)_s", "1" },
+    [PROPERTY_SPEED_OF_SOUND] = { "speed of sound", "w^2 = (dp/drho)_s", "m/s" } };
+  if (!ev->workings) {
+    return;
+  }
+  eos_record (ev->workings, q->gas, q->T, q->p, state);
+  const double value = q->property == PROPERTY_CP ? h->cp : q->property == PROPERTY_CV ? h->cv
+                       : q->property == PROPERTY_KAPPA ? h->kappa : h->w;
+  RECORD (ev, .name = told[q->property].name, .formula = told[q->property].formula,
+          .solved = "derivatives of the Helmholtz energy, ideal part with them", .value = value,
+          .unit = told[q->property].unit, .source = state->equation->source,
+          STEP_SYMBOLS (SYMBOL ("T", q->T, "K"), SYMBOL ("rho", state->density, "mol/m3")));
+}
+
 /* Of an ideal gas: cv = cp - R, kappa = cp/cv, w^2 = kappa R T/M.  */
 static bool
 ideal_heats (struct evaluation *ev, const struct property_question *q, struct heats *h)
 {
   struct ideal_heat ideal;
-  if (!heat_of_gas (ev->session->properties, q->gas, q->T, &ideal, NULL, ev->fault)) {
+  if (!heat_of_gas (ev->session->properties, q->gas, q->T, &ideal, ev->workings, ev->fault)) {
     return false;
   }
   h->cp = ideal.cp;
@@ -31,6 +81,7 @@ ideal_heats (struct evaluation *ev, const struct property_question *q, struct he
   h->kappa = h->cp / h->cv;
   h->w = sqrt (h->kappa * GAS_CONSTANT * q->T / constants_molar_mass (ev, q->gas));
   h->how = "ideal gas, no effect of pressure";
+  record_ideal (ev, q, h);
   if (ideal.outside) {
     note (ev, MESSAGE_NOTE_BEYOND_RANGE, "heat capacity", ideal.outside->key, NULL);
   }
@@ -55,6 +106,7 @@ real_heats (struct evaluation *ev, const struct property_question *q,
     return ideal_heats (ev, q, h);
   }
   *h = (struct heats) { c.cp, c.cv, c.isentropic_exponent, c.speed_of_sound, equation->name };
+  record_real (ev, q, &state, h);
   if (state.lumped > TRACES_WORTH_A_NOTE) {
     note (ev, MESSAGE_NOTE_MODEL_TRACES, equation->name, share_text (ev->arena, state.lumped),
           NULL);
@@ -90,6 +142,13 @@ property_caloric (struct evaluation *ev, const struct property_question *q, stru
   double M = constants_molar_mass (ev, q->gas);
   double si = q->property == PROPERTY_CP ? h.cp / M : q->property == PROPERTY_CV ? h.cv / M
               : q->property == PROPERTY_KAPPA ? h.kappa : h.w;
+  if (ev->workings && (q->property == PROPERTY_CP || q->property == PROPERTY_CV)) {
+    record_molar_mass (ev, q->gas, NULL);
+    RECORD (ev, .name = "heat capacity by mass", .formula = "c = C/M", .value = si,
+            .unit = "J/(kg K)", .source = STEP_DEFINITION,
+            STEP_SYMBOLS (SYMBOL ("C", q->property == PROPERTY_CP ? h.cp : h.cv, "J/(mol K)"),
+                          SYMBOL ("M", M, "kg/mol")));
+  }
   if (!property_answer (ev, q, si, out)) {
     return false;
   }
@@ -107,7 +166,7 @@ property_viscosity (struct evaluation *ev, const struct property_question *q, st
 {
   struct viscosity v;
   if (!property_needs (ev, q, true, false)
-      || !viscosity_of_gas (ev->session->properties, q->gas, q->T, &v, NULL, ev->fault)) {
+      || !viscosity_of_gas (ev->session->properties, q->gas, q->T, &v, ev->workings, ev->fault)) {
     fault_place (ev->fault, q->node->at);
     return false;
   }
@@ -181,7 +240,7 @@ bool
 property_flammable (struct evaluation *ev, const struct property_question *q, struct value *out)
 {
   struct flammability f;
-  if (!flammability_of (q->gas, NULL, 0, &f, NULL, ev->fault)) {
+  if (!flammability_of (q->gas, NULL, 0, &f, ev->workings, ev->fault)) {
     fault_place (ev->fault, q->node->b->at);
     return false;
   }

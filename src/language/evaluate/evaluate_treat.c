@@ -7,6 +7,7 @@
 #include "gas/analysis.h"
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "result/result.h"
@@ -70,6 +71,10 @@ gas_normalised (struct evaluation *ev, const struct change_of *c, const struct a
   const struct analysis *after
     = into ? analysis_normalised_into (ev->arena, before, into, &did, ev->fault)
            : analysis_normalised (ev->arena, before, &did, ev->fault);
+  if (after) {
+    record_treatment (ev, &(struct treated) { .name = "normalised:", .of = c->name,
+                                              .before = before, .after = after, .did = &did });
+  }
   if (!after || !ev->result || fabs (did.total_before - 1) <= SCALING_WORTH_A_NOTE) {
     return after;
   }
@@ -218,6 +223,9 @@ without_gas (struct evaluation *ev, const struct change_of *c, const struct anal
     fault_place (ev->fault, c->node->c ? c->node->c->at : c->node->b->at);
     return NULL;
   }
+  record_treatment (ev, &(struct treated) { .name = "what is left of", .of = c->name,
+                                            .before = before, .after = after, .did = &first.did,
+                                            .gas = gas, .tracers = &tracers });
   if (ev->result) {
     note_removed_by (ev, c, before, &first);
   }
@@ -252,11 +260,14 @@ gas_without (struct evaluation *ev, const struct change_of *c, const struct anal
   double removed = 0;
   for (size_t i = 0; i < set.count; i++) {
     struct treatment did;
-    after = analysis_without (ev->arena, after, set.at[i], &did, ev->fault);
+    const struct analysis *whole = after;
+    after = analysis_without (ev->arena, whole, set.at[i], &did, ev->fault);
     if (!after) {
       fault_place (ev->fault, what->at);
       return NULL;
     }
+    record_treatment (ev, &(struct treated) { .name = "what is left of", .of = c->name,
+                                              .before = whole, .after = after, .did = &did });
     removed += did.removed;
   }
   if (ev->result) {

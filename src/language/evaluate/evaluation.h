@@ -16,7 +16,7 @@
 #include "support/fault.h"
 
 struct arena; struct calorific_moves; struct definition; struct eos_state; struct result;
-struct session; struct worked;
+struct session; struct worked; struct workings;
 
 /* An uncertain figure, told apart from others by the address of what it belongs to.  */
 struct source {
@@ -65,6 +65,7 @@ struct evaluation {
   const struct settings *settings;
   struct fault *fault;
   struct result *result;                    /* where notes go; null: nowhere */
+  struct workings *workings;                /* the record of steps; null: none is kept */
   bool describe;                            /* false while only the figures are wanted */
   const char *subject;                      /* the name being defined, for notes; or null */
 

@@ -4,6 +4,7 @@
 #include <math.h>
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
@@ -20,7 +21,7 @@ flow_basis_of (const struct measure *m, bool *flow)
     return FLOW_ENERGY;
   }
   if (*flow) {
-    d = dimension_times (d, DIMENSION_TIME);
+    d.time++;
   }
   if (dimension_equal (d, DIMENSION_VOLUME)) {
     return m->family_power == 1 ? FLOW_REFERENCE : FLOW_ACTUAL;
@@ -150,6 +151,38 @@ moles_per_figure (struct evaluation *ev, const struct flow_figure *f, const stru
                        "this is no flow and no amount of a gas", NULL);
 }
 
+/* What one mole has of what the figure counts, and whether the water is counted.  */
+struct amount { double per; bool dry; double y; };
+
+/* The amount that a figure came to.  */
+static void
+record_amount (struct evaluation *ev, const struct flow_figure *f, const struct stream *made,
+               const struct composition *counted, const struct amount *amount)
+{
+  static const struct { const char *symbol, *unit, *formula, *dry; } ways[] = {
+    [FLOW_NONE] = { "", "", "", "" },
+    [FLOW_MASS] = { "M", "kg/mol", "n = q/M", "n = q/M/(1 - y)" },
+    [FLOW_MOLAR] = { "k", "mol/mol", "n = q/k", "n = q/k/(1 - y)" },
+    [FLOW_REFERENCE] = { "V", "m3/mol", "n = q/V", "n = q/V/(1 - y)" },
+    [FLOW_ACTUAL] = { "V", "m3/mol", "n = q/V", "n = q/V/(1 - y)" },
+    [FLOW_ENERGY] = { "H", "J/mol", "n = q/H", "n = q/H/(1 - y)" },
+  };
+  bool flow;
+  enum flow_basis basis = flow_basis_of (&f->quantity->measure, &flow);
+  if (!ev->workings) {
+    return;
+  }
+  if (basis == FLOW_MASS) {
+    record_molar_mass (ev, counted, f->called);
+  }
+  RECORD (ev, .name = "amount of", .of = f->called ? f->called : "the gas",
+          .formula = amount->dry ? ways[basis].dry : ways[basis].formula, .value = made->moles,
+          .unit = moles_unit (made->flow), .source = STEP_DEFINITION,
+          STEP_SYMBOLS ({ "q", f->quantity->si, NULL, NULL, f->quantity->unit },
+                        SYMBOL (ways[basis].symbol, 1 / amount->per, ways[basis].unit),
+                        SYMBOL ("y", amount->y, "mol/mol")));
+}
+
 bool
 flow_from_quantity (struct evaluation *ev, const struct flow_figure *f, struct place at,
                     struct stream *out)
@@ -180,6 +213,7 @@ flow_from_quantity (struct evaluation *ev, const struct flow_figure *f, struct p
     return false;
   }
   stream.moles = f->quantity->si * per / (dry ? 1 - y : 1);
+  record_amount (ev, f, &stream, counted, &(struct amount) { per, dry, y });
   if (stream.moles < 0) {
     return fault_set_at (ev->fault, MESSAGE_RANGE, f->typed->at,
                          "a flow or an amount below zero", NULL);

@@ -20,6 +20,7 @@ struct flow_figure {
   const struct node *typed;
   const struct state *state;
   const struct stream *source;
+  const char *called;                       /* the gas's name; or null */
 };
 /* AT is where the gas is named.
    Kinds: state-missing, gross-or-net, unit-mismatch, not-available.  */

@@ -5,6 +5,7 @@
 #include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "property/calorific.h"
@@ -78,6 +79,12 @@ note_no_uncertainties (struct evaluation *ev, enum calorific_edition edition)
   }
 }
 
+const char *
+heat_standard (const struct evaluation *ev)
+{
+  return calorific_edition_name (edition_of (ev, STANDARD_NONE));
+}
+
 static void
 assume_combustion (struct evaluation *ev)
 {
@@ -118,12 +125,12 @@ note_origins (struct evaluation *ev, const struct composition *gas,
 
 static bool
 known_figures (struct evaluation *ev, const struct heat_question *q,
-               const struct composition *gas, struct calorific *out)
+               const struct composition *gas, int wanted, struct calorific *out)
 {
   struct calorific_question ask = {
     .edition = edition_of (ev, q->by), .T_combustion = ev->settings->combustion,
     .T_metering = q->T, .p = q->p, .real = q->real, .by_standard = q->by != STANDARD_NONE,
-    .moves = constants_moves (ev) };
+    .moves = constants_moves (ev), .workings = ev->workings, .wanted = wanted };
   for (size_t i = 0; i < gas->count; i++) {
     if (gas->species[i]->origin == SPECIES_STATED) {
       fault_set (ev->fault, MESSAGE_MODEL_LACKS, calorific_edition_name (ask.edition),
@@ -142,6 +149,19 @@ known_figures (struct evaluation *ev, const struct heat_question *q,
   return true;
 }
 
+/* Where part of a gas has a calorific value that was stated.  */
+static void
+record_burnt (struct evaluation *ev, const struct burnt *burnt, double known, double H)
+{
+  if (burnt->share < 1) {
+    RECORD (ev, .name = "calorific value, molar, with what is stated",
+            .formula = "H = s H_k + H_s", .value = H, .unit = "J/mol", .source = STEP_DEFINITION,
+            STEP_SYMBOLS (SYMBOL ("s", burnt->known ? burnt->share : 0, "mol/mol"),
+                          SYMBOL ("H_k", known, "J/mol"),
+                          CONSTANT ("H_s", burnt->stated, "J/mol", STEP_TYPED)));
+  }
+}
+
 bool
 heat_per_mole (struct evaluation *ev, const struct composition *gas, bool net, double *H)
 {
@@ -155,12 +175,15 @@ heat_per_mole (struct evaluation *ev, const struct composition *gas, bool net, d
   }
   *H = burnt.stated;
   if (!burnt.known) {
+    record_burnt (ev, &burnt, 0, *H);
     return true;
   }
-  if (!known_figures (ev, &q, burnt.known, &figures)) {
+  const int molar = net ? CALORIFIC_NET_MOLAR : CALORIFIC_GROSS_MOLAR;
+  if (!known_figures (ev, &q, burnt.known, molar, &figures)) {
     return false;
   }
-  *H += burnt.share * figures.value[net ? CALORIFIC_NET_MOLAR : CALORIFIC_GROSS_MOLAR];
+  *H += burnt.share * figures.value[molar];
+  record_burnt (ev, &burnt, figures.value[molar], *H);
   return true;
 }
 
@@ -175,6 +198,35 @@ static bool
 is_wobbe (int figure)
 {
   return figure == CALORIFIC_WOBBE || figure == CALORIFIC_NET_WOBBE;
+}
+
+/* From the molar calorific value to what is asked.  */
+static void
+record_ideal (struct evaluation *ev, const struct heat_question *q, int figure, double H,
+              double value)
+{
+  const bool mass = figure == CALORIFIC_GROSS_MASS || figure == CALORIFIC_NET_MASS;
+  const bool wobbe = is_wobbe (figure);
+  const double M = q->gas->molar_mass, Vm = GAS_CONSTANT * q->T / q->p;
+  if (!ev->workings || figure == CALORIFIC_GROSS_MOLAR || figure == CALORIFIC_NET_MOLAR) {
+    return;
+  }
+  const double air = heat_air_molar_mass (ev);
+  if (mass || wobbe) {
+    record_molar_mass (ev, q->gas, NULL);
+  }
+  if (!mass) {
+    RECORD (ev, .name = "volume of a mole", .formula = "V = R T/p", .value = Vm, .unit = "m3/mol",
+            .source = STEP_IDEAL_GAS,
+            STEP_SYMBOLS (STEP_R, SYMBOL ("T", q->T, "K"), SYMBOL ("p", q->p, "Pa")));
+  }
+  RECORD (ev, .name = wobbe ? "Wobbe index" : mass ? "calorific value by mass"
+                                                   : "calorific value by volume",
+          .formula = wobbe ? "W = H/V/sqrt(M/M_air)" : mass ? "h = H/M" : "h = H/V",
+          .value = value, .unit = mass ? "J/kg" : "J/m3", .source = heat_standard (ev),
+          STEP_SYMBOLS (SYMBOL ("H", H, "J/mol"), SYMBOL ("M", M, "kg/mol"),
+                        SYMBOL ("V", Vm, "m3/mol"),
+                        CONSTANT ("M_air", air, "kg/mol", heat_standard (ev))));
 }
 
 /* Ideal-gas figures from the molar calorific value H: H/M, H p/(RT), and the latter over the root
@@ -195,6 +247,7 @@ ideal_figure (struct evaluation *ev, const struct heat_question *q, int figure, 
   } else {
     *value = H / Vm;
   }
+  record_ideal (ev, q, figure, H, *value);
   return true;
 }
 
@@ -274,7 +327,7 @@ heat_figure (struct evaluation *ev, const struct heat_question *asked, int figur
     assume_family (ev, FAMILY_STANDARD);
   }
   if (q.real || q.by) {
-    if (!known_figures (ev, &q, q.gas, &figures)) {
+    if (!known_figures (ev, &q, q.gas, figure, &figures)) {
       return false;
     }
     *value = figures.value[ev->settings->trial.other_heat ? other_heat (figure) : figure];

@@ -7,6 +7,7 @@
 #include "gas/reference.h"
 #include "gas/species.h"
 #include "language/evaluate/flow.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "property/moist.h"
@@ -369,7 +370,7 @@ state_water (struct evaluation *ev, const struct state *state, const struct mois
   double p = ev->settings->trial.vapour_atmospheric ? STANDARD_ATMOSPHERE : at->p;
   struct moist_question question = { asked[state->moisture], state->moist, at->T, p,
                                      applies_enhancement (ev, at->gas) };
-  if (!moist_answer (&question, &answer, NULL, ev->fault)) {
+  if (!moist_answer (&question, &answer, ev->workings, ev->fault)) {
     return false;
   }
   if (state->moisture == MOISTURE_HUMIDITY && at->T < ICE_POINT && ev->describe) {
@@ -423,6 +424,7 @@ state_wets (struct evaluation *ev, const struct state *state, const struct strea
     fault_place (ev->fault, at);
     return false;
   }
+  record_wetting (ev, *gas, wet);
   if (before > 0) {
     note_water (ev, before, y);
   }
@@ -441,8 +443,10 @@ state_apply (struct evaluation *ev, const struct state *state, struct stream *st
     return false;
   }
   if (gas != stream->gas) {
-    stream->moles = dry / (1 - composition_fraction (gas, water));
+    double y = composition_fraction (gas, water);
+    stream->moles = dry / (1 - y);
     stream->gas = gas;
+    record_rewetted (ev, dry, y, stream);
   }
   if (!isnan (state->T) || !isnan (state->p)) {
     stream->Z = UNSTATED;

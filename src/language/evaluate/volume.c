@@ -5,6 +5,7 @@
 #include "eos/eos.h"
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
@@ -24,6 +25,7 @@ family_molar_volume (struct evaluation *ev, enum reference_family family,
   evaluation_touch (ev, TOUCH_VOLUMES);
   if (!gas || !(real || ev->settings->real_volumes)) {
     *Vm = ideal;
+    record_family (ev, family, ideal);
     return true;
   }
   double Z;
@@ -118,6 +120,36 @@ assume_choice (struct evaluation *ev, const struct eos_state *state, const char 
   }
 }
 
+/* From Z to the volume of a mole; the ideal gas has no Z to be found.  */
+static void
+record_volume (struct evaluation *ev, const struct volume_question *q,
+               const struct eos_state *state, double Vm)
+{
+  bool ideal = state->equation == &equation_ideal;
+  if (!ev->workings) {
+    return;
+  }
+  eos_record (ev->workings, q->gas, q->T, q->p, state);
+  const double R = state->equation->gas_constant;
+  RECORD (ev, .name = "volume of a mole", .formula = ideal ? "V = R T/p" : "V = Z R T/p",
+          .value = Vm, .unit = "m3/mol", .source = ideal ? STEP_IDEAL_GAS : STEP_DEFINITION,
+          STEP_SYMBOLS (CONSTANT ("R", R, "J/(mol K)", fabs (R - GAS_CONSTANT) > 0
+                                                         ? state->equation->source : STEP_SI),
+                        SYMBOL ("T", q->T, "K"), SYMBOL ("p", q->p, "Pa"),
+                        SYMBOL ("Z", state->Z, "1")));
+}
+
+/* With a Z that was given, or 1 in nobody's gas.  */
+static void
+record_given (struct evaluation *ev, const struct volume_question *q, double Z, double Vm)
+{
+  bool given = !isnan (q->Z);
+  RECORD (ev, .name = "volume of a mole", .formula = given ? "V = Z R T/p" : "V = R T/p",
+          .value = Vm, .unit = "m3/mol", .source = given ? STEP_DEFINITION : STEP_IDEAL_GAS,
+          STEP_SYMBOLS (STEP_R, SYMBOL ("T", q->T, "K"), SYMBOL ("p", q->p, "Pa"),
+                        CONSTANT ("Z", Z, "1", STEP_TYPED)));
+}
+
 static bool
 model_molar_volume (struct evaluation *ev, const struct volume_question *q, double *Vm, double *Z,
                     const char **model)
@@ -138,6 +170,7 @@ model_molar_volume (struct evaluation *ev, const struct volume_question *q, doub
   double moved = constants_density (ev, &state);
   *Z = state.Z / moved;
   *Vm = 1 / (state.density * moved);
+  record_volume (ev, q, &state, *Vm);
   *model = equation->name;
   if (ev->describe && wanted == GAS_MODEL_IDEAL && !q->ideal) {
     evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_IDEAL_SET,
@@ -172,6 +205,7 @@ volume_at_Z (struct evaluation *ev, const struct volume_question *q, double *Vm,
     *Z = q->Z;
     *model = "as given";
     *Vm = q->Z * GAS_CONSTANT * q->T / q->p;
+    record_given (ev, q, *Z, *Vm);
     if (ev->result) {
       note (ev, MESSAGE_NOTE_GIVEN_Z, figure_text (ev->arena, q->Z), NULL, NULL);
     }
@@ -182,6 +216,7 @@ volume_at_Z (struct evaluation *ev, const struct volume_question *q, double *Vm,
     *Z = 1;
     *model = "ideal";
     *Vm = GAS_CONSTANT * q->T / q->p;
+    record_given (ev, q, 1, *Vm);
     if (ev->describe) {
       evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_IDEAL_TRACE });
     }

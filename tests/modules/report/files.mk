@@ -12,6 +12,10 @@ suites += %D%/t_figure
 %C%_t_figure_SOURCES = %D%/t_figure.c
 %C%_t_figure_LDADD = $(with_report)
 
+suites += %D%/t_formula
+%C%_t_formula_SOURCES = %D%/t_formula.c
+%C%_t_formula_LDADD = $(with_report)
+
 suites += %D%/t_report
 %C%_t_report_SOURCES = %D%/t_report.c
 %C%_t_report_LDADD = $(with_report)
