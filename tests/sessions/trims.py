@@ -170,6 +170,32 @@ a in kmol/h as a3
     tap.tell(wrong, "how near it came is said")
 
 
+def as_typed(tap):
+    """A quantity keeps its words, its unit and its uncertainty; bar(g) counts from the barometer."""
+    for typed, aim, label, want, kept in (
+            ("850 Nm3/h \u00b1 2 % (k=2)", "x of N2 = 900 kg/h", "x", 900 / 28.014 * 22.41396954,
+             "Nm3/h +/- 2 % (k=2)"),
+            ("97 \u00b1 0.2 kg/h (limits)", "x of N2 = 3 kmol/h", "x", 3 * 28.014,
+             "kg/h +/- 0.2 kg/h (limits)"),
+            ("100 Nm3/h dry", "x of N2 = 10 kmol/h", "x", 224.1396954, "Nm3/h dry"),
+            ("2 bar(g)", "density of N2 at 20 degC, (x) = 8 kg/m3", "x",
+             8 / 0.028014 * 8.314462618 * 293.15 / 1e5 - 1.01325, "bar(g)"),
+            ("100 mbar(vac)", "density of N2 at 20 degC, (x) = 1 kg/m3", "x",
+             1013.25 - 1 / 0.028014 * 8.314462618 * 293.15 / 1e2, "mbar(vac)"),
+            ("3 bar(g)", "x + 1 bar = 7 bar(g)", "x", 6, "bar(g)"),
+            ("20 degC", "density of N2 at (x), 2 bar(a) = 2.5 kg/m3", "x",
+             2e5 * 0.028014 / 2.5 / 8.314462618 - 273.15, "degC"),
+            ("5 MW gross", "x of CH4 = 360 kg/h", "x", None, "MW gross")):
+        objects = session.answers("set gas model ideal\nlet x = %s\ntrim x so %s\nlist\n"
+                                  % (typed, aim))
+        wrong = session.faults(objects)
+        if want is not None and not wrong:
+            wrong = session.off(values(objects[-2]).get(label), want, 3e-6)
+        tap.tell(wrong, "trim of %s so %s" % (typed, aim))
+        tap.tell("" if kept + '"' in str(objects[-1]).replace("'", '"') else str(objects[-1]),
+                 "it keeps %s" % kept)
+
+
 def main():
     tap = session.Tap()
     rng = random.Random(SEED)
@@ -178,6 +204,7 @@ def main():
     corners(tap, rng)
     several_values(tap)
     session_follows(tap)
+    as_typed(tap)
     return tap.finish()
 
 

@@ -47,7 +47,7 @@ add_range (struct trim *t, const struct node *name, size_t i)
 {
   const struct unit *unit = t->moved[i].value.unit;
   bool scaled = unit && (unit->sort == UNIT_POINT || unit->sort == UNIT_GAUGE);
-  t->least[i] = scaled ? fmin (unit_from_si (unit, 0), 0) : 0;
+  t->least[i] = scaled ? unit_from_si (unit, unit_to_si (unit, t->before[i]) - t->si[i]) : 0;
   t->most[i] = HUGE_VAL;
   if (!name->a) {
     return true;
@@ -85,6 +85,7 @@ add_quantity (struct trim *t, const struct node *name, size_t i)
   }
   t->moved[i] = (struct stand_in) { d, *value, NULL };
   t->before[i] = t->x[i] = d->statement->value->number;
+  t->si[i] = value->si;
   if (!add_range (t, name, i)) {
     return false;
   }
@@ -96,12 +97,24 @@ add_quantity (struct trim *t, const struct node *name, size_t i)
 
 /* ---- Figures ---- */
 
+/* SI from a figure in the unit of quantity I.  What its unit counts from, the barometer for
+   bar(g), is told by what the figure was worked out to before.                                  */
+static double
+si_of (const struct trim *t, size_t i, double x)
+{
+  const struct unit *unit = t->moved[i].value.unit;
+  if (!unit) {
+    return x;
+  }
+  double moved = unit_to_si (unit, x) - unit_to_si (unit, t->before[i]);
+  return t->si[i] + (unit->sort == UNIT_VACUUM ? -moved : moved);
+}
+
 static void
 evaluation_at (struct trim *t, const double x[], struct evaluation *ev, struct fault *fault)
 {
   for (size_t i = 0; i < t->count; i++) {
-    struct value *v = &t->moved[i].value;
-    v->si = v->unit ? unit_to_si (v->unit, x[i]) : x[i];
+    t->moved[i].value.si = si_of (t, i, x[i]);
   }
   evaluation_again (ev, t->first, fault);
   ev->stand_ins = t->moved;
@@ -121,6 +134,13 @@ sides_of (struct evaluation *ev, const struct aim *aim, double *value, double *a
   struct target target = { .unit = right.unit, .unit_text = right.unit ? right.unit->spelling : "",
                            .words = right.words, .at = aim->right->at };
   *aimed = right.unit ? unit_from_si (right.unit, right.si) : right.si;
+  if (right.unit && (right.unit->sort == UNIT_GAUGE || right.unit->sort == UNIT_VACUUM)) {
+    if (!convert_value (ev, &right, &target, &subject, &figures)) {
+      return false;
+    }
+    *aimed = figures.at[0].value;
+    figures.count = 0;
+  }
   if (!right.unit && left.kind == VALUE_RATIO) {
     left = value_number (left.moles);
   }
@@ -209,6 +229,21 @@ asked (void *context, const double x[], double c[], double *objective)
 
 /* ---- The outcome ---- */
 
+static double
+to_twelve_digits (double value)
+{
+  struct text text;
+  double rounded = value;
+  bool too_large;
+  text_init (&text);
+  number_write (&text, fabs (value), 12);
+  if (!number_read (text.bytes, text.length, &rounded, &too_large)) {
+    rounded = fabs (value);
+  }
+  text_clear (&text);
+  return copysign (rounded, value);
+}
+
 /* The quantities to twelve digits, if the aims are met as well so: 900, not 899.9999999999938.  */
 static void
 drop_last_digits (struct trim *t, const double found[])
@@ -216,10 +251,8 @@ drop_last_digits (struct trim *t, const double found[])
   double *x = ARENA_ARRAY (t->arena, t->count, double), objective;
   double *c = ARENA_ARRAY (t->arena, t->aim_count, double);
   for (size_t k = 0; k < t->count; k++) {
-    double unit = fabs (found[k]) > 0 ? pow (10, floor (log10 (fabs (found[k]))) - 11) : 1;
     t->x[k] = found[k];
-    x[k] = unit < 1 ? round (found[k] / unit) / (1 / unit) : round (found[k] / unit) * unit;
-    x[k] = fmin (fmax (x[k], t->least[k]), t->most[k]);
+    x[k] = fmin (fmax (to_twelve_digits (found[k]), t->least[k]), t->most[k]);
   }
   if (!asked (t, x, c, &objective)) {
     return;
@@ -261,6 +294,33 @@ search (struct trim *t, struct search_finding *found, struct fault *fault)
   return true;
 }
 
+/* Unit, words and uncertainty of a figure as they were typed.  */
+static void
+add_as_typed (struct text *source, const struct node *typed)
+{
+  static const struct { unsigned bit; const char *word; } words[] = {
+    { WORD_DRY, " dry" }, { WORD_WET, " wet" }, { WORD_REAL, " real" }, { WORD_IDEAL, " ideal" },
+    { WORD_GROSS, " gross" }, { WORD_NET, " net" }
+  };
+  const char *unit = typed->unit ? typed->unit->spelling : "";
+  text_add_format (source, "%s%s", *unit ? " " : "", unit);
+  const struct spread *s = typed->spread;
+  if (s) {
+    const char *own = s->relative ? "%" : s->unit ? s->unit->spelling : unit;
+    text_add_format (source, " +/- %s%s%s", s->figure, *own ? " " : "", own);
+    if (s->kind == SPREAD_LIMITS) {
+      text_add (source, " (limits)");
+    } else if (s->kind == SPREAD_EXPANDED) {
+      text_add (source, " (k=");
+      number_write_exact (source, s->k);
+      text_add_char (source, ')');
+    }
+  }
+  for (size_t i = 0; i < sizeof words / sizeof words[0]; i++) {
+    text_add (source, typed->words & words[i].bit ? words[i].word : "");
+  }
+}
+
 static bool
 keep (struct trim *t, struct result *result, struct fault *fault)
 {
@@ -273,8 +333,7 @@ keep (struct trim *t, struct result *result, struct fault *fault)
     text_init (&source);
     text_add_format (&source, "let %s = ", name_text (t->arena, name->text));
     number_write_exact (&source, t->x[i]);
-    text_add_char (&source, ' ');
-    text_add (&source, t->moved[i].value.unit ? t->moved[i].value.unit->spelling : "");
+    add_as_typed (&source, d->statement->value);
     bool done = name_define (t->session, &from, source.bytes, NAME_QUANTITY, result, fault);
     text_clear (&source);
     if (!done) {
@@ -380,7 +439,7 @@ make_room (struct trim *t)
   }
   t->moved = ARENA_ARRAY (t->arena, t->count, struct stand_in);
   t->one_sided = ARENA_ARRAY (t->arena, t->aim_count, bool);
-  double **figures[] = { &t->x, &t->before, &t->scale, &t->least, &t->most };
+  double **figures[] = { &t->x, &t->before, &t->si, &t->scale, &t->least, &t->most };
   for (size_t i = 0; i < sizeof figures / sizeof figures[0]; i++) {
     *figures[i] = ARENA_ARRAY (t->arena, t->count, double);
   }

@@ -16,6 +16,7 @@ struct trim {
   size_t count, aim_count;
   struct stand_in *moved;           /* the named quantities, with the value tried */
   double *x, *before, *scale, *least, *most;            /* in their own units */
+  double *si;                       /* what `before` came to */
   bool *one_sided;                  /* of each aim */
   bool ranged;                      /* the user gave a range */
   struct evaluation *first;         /* where what is used is gathered */
