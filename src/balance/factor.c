@@ -2,6 +2,7 @@
 #include "balance/factor.h"
 
 #include <math.h>
+#include <string.h>
 #include "balance/factor_way.h"
 #include "support/arena.h"
 
@@ -29,6 +30,18 @@ sparse_add (struct sparse *sparse, size_t column, double coefficient)
   sparse->coefficient[at] = coefficient;
 }
 
+struct sparse
+sparse_copy (struct arena *arena, const struct sparse *sparse)
+{
+  size_t count = sparse->count, terms = sparse->start[count];
+  struct sparse copy = sparse_make (arena, count, terms);
+  copy.count = count;
+  memcpy (copy.start, sparse->start, (count + 1) * sizeof *copy.start);
+  memcpy (copy.column, sparse->column, terms * sizeof *copy.column);
+  memcpy (copy.coefficient, sparse->coefficient, terms * sizeof *copy.coefficient);
+  return copy;
+}
+
 void
 sparse_times (const struct sparse *sparse, const double v[], double out[])
 {
@@ -54,7 +67,8 @@ sparse_row_size (const struct sparse *sparse, size_t i, const double scale[])
 const struct factor *
 factor_make (struct arena *arena, const struct linearised *equations)
 {
-  return factor_make_dense (arena, equations);
+  return equations->unknowns > FACTOR_DENSE ? factor_make_sparse (arena, equations)
+                                            : factor_make_dense (arena, equations);
 }
 
 /* The multiplier and increment of Numerical Recipes (1992), section 7.1, "an even quicker"

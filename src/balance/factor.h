@@ -30,6 +30,7 @@ struct sparse {
 struct sparse sparse_make (struct arena *, size_t count, size_t terms) MUST_CHECK;
 void sparse_begin (struct sparse *);
 void sparse_add (struct sparse *, size_t column, double coefficient);
+struct sparse sparse_copy (struct arena *, const struct sparse *) MUST_CHECK;
 /* OUT = R v, summed in long double.  */
 void sparse_times (const struct sparse *, const double v[], double out[]);
 
@@ -41,12 +42,13 @@ struct linearised {
   size_t unknowns;
   struct sparse exact, measured;
   const double *scale;
+  const size_t *order;           /* of elimination, or null; the dense way needs none */
 };
 
 /* A form that moves by less than this share of its size along what is open is settled.  */
 #define FACTOR_SETTLED 1e-8
 /* Unknowns up to which the dense way is taken.  */
-enum { FACTOR_DENSE = 400 };
+enum { FACTOR_DENSE = 150 };
 
 const struct factor *factor_make (struct arena *, const struct linearised *) MUST_CHECK;
 

@@ -293,16 +293,9 @@ const struct factor *
 factor_make_dense (struct arena *arena, const struct linearised *equations)
 {
   struct dense *dense = ARENA_NEW (arena, struct dense);
-  size_t n = equations->unknowns, m = equations->measured.count;
+  size_t n = equations->unknowns;
   dense->scale = memcpy (ARENA_ARRAY (arena, n, double), equations->scale, n * sizeof (double));
-  dense->measured = sparse_make (arena, m, equations->measured.start[m]);
-  for (size_t i = 0; i < m; i++) {
-    const struct sparse *G = &equations->measured;
-    sparse_begin (&dense->measured);
-    for (size_t k = G->start[i]; k < G->start[i + 1]; k++) {
-      sparse_add (&dense->measured, G->column[k], G->coefficient[k]);
-    }
-  }
+  dense->measured = sparse_copy (arena, &equations->measured);
   take_exact_apart (arena, equations, dense);
   take_measured_apart (arena, equations, dense);
   size_t rank = dense->settled.rank;

@@ -26,5 +26,6 @@ struct factor {
 double factor_random (unsigned *state);
 
 const struct factor *factor_make_dense (struct arena *, const struct linearised *) MUST_CHECK;
+const struct factor *factor_make_sparse (struct arena *, const struct linearised *) MUST_CHECK;
 
 #endif

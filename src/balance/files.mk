@@ -5,6 +5,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/absent.h \
   %D%/agree.c \
   %D%/bend.c \
+  %D%/column_order.c \
+  %D%/column_order.h \
   %D%/conflict.c \
   %D%/conflict.h \
   %D%/core.c \
@@ -12,9 +14,12 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/factor.c \
   %D%/factor.h \
   %D%/factor_dense.c \
+  %D%/factor_sparse.c \
   %D%/factor_way.h \
   %D%/fixed.c \
   %D%/fixed.h \
+  %D%/fronts.c \
+  %D%/fronts.h \
   %D%/gross.c \
   %D%/gross.h \
   %D%/measured.c \

@@ -3,6 +3,7 @@
 
 #include <math.h>
 #include <string.h>
+#include "balance/column_order.h"
 #include "support/arena.h"
 
 /* ---- Which facts are measured ---- */
@@ -57,21 +58,10 @@ stream_total (struct making *m, size_t stream)
   return (struct form) { parts, terms };
 }
 
-static bool
-is_void (const struct making *m, const struct form *form)
-{
-  for (size_t i = 0; i < form->count; i++) {
-    if (!m->system->absence.absent[form->terms[i].column]) {
-      return false;
-    }
-  }
-  return form->count > 0;
-}
-
 static void
 add_figure (struct making *m, struct figure figure)
 {
-  figure.void_ = is_void (m, &figure.right);
+  figure.closed_y = figure.y;
   m->figure[m->figures++] = figure;
 }
 
@@ -99,16 +89,19 @@ add_composition (struct making *m, size_t f)
   struct form total = stream_total (m, fact->stream);
   size_t closure = network_columns (m->network) + m->closures;
   bool rest = false;
+  double sum = 0;
   for (size_t c = 0; c < parts; c++) {
     double u = fraction_u (fact, m->standing[f], c);
     struct form left = { 1, &total.terms[c] };
     if (u > 0) {
-      add_figure (m, (struct figure) { f, c, left, total, closure, fact->fractions[c], u, false });
+      add_figure (m, (struct figure) { f, c, left, total, closure, fact->fractions[c], u, 0 });
     }
     rest = rest || (!(u > 0) && fact->fractions[c] > 0);
+    sum += fact->fractions[c];
   }
-  for (size_t i = first; rest && i < m->figures; i++) {
-    m->figure[i].closure = NOWHERE;
+  for (size_t i = first; i < m->figures; i++) {
+    m->figure[i].closure = rest ? NOWHERE : closure;
+    m->figure[i].closed_y = rest ? m->figure[i].y : m->figure[i].y / sum;
   }
   m->closures += rest ? 0 : 1;
 }
@@ -119,7 +112,7 @@ add_fact (struct making *m, size_t f)
   const struct fact *fact = &m->network->fact[f];
   size_t none = m->network->components;
   double u = m->standing[f] == STANDING_DIGITS ? of_digits (fact->rounding) : fact->u;
-  struct figure figure = { f, none, fact->left, fact->right, NOWHERE, fact->value, u, false };
+  struct figure figure = { f, none, fact->left, fact->right, NOWHERE, fact->value, u, 0 };
   switch (fact->kind) {
   case FACT_COMPOSITION:
     add_composition (m, f);
@@ -266,6 +259,22 @@ number_unknowns (struct arena *arena, struct measured *measured)
   measured->scale = scale;
 }
 
+/* One order for all points: the rows have their entries in the same places.  */
+static void
+order_unknowns (struct arena *arena, struct measured *measured)
+{
+  struct arena *work = arena_create ();
+  double *v = ARENA_ARRAY (work, measured->places, double);
+  for (size_t i = 0; i < measured->places; i++) {
+    v[i] = measured->unknown[i] != NOWHERE ? 1 : 0;
+  }
+  struct tangent t = tangent_make (work, measured, v, false);
+  const struct sparse *C = &t.equations.exact, *G = &t.equations.measured;
+  struct sets sets[] = { { C->count, C->start, C->column }, { G->count, G->start, G->column } };
+  measured->order = column_order (arena, measured->unknowns, 2, sets);
+  arena_destroy (work);
+}
+
 struct measured *
 measured_make (struct arena *arena, const struct network *stated, const enum standing standing[])
 {
@@ -288,10 +297,25 @@ measured_make (struct arena *arena, const struct network *stated, const enum sta
   measured->left_out = ARENA_ARRAY (arena, m.figures + 1, bool);
   measured->held = ARENA_ARRAY (arena, m.system->columns, bool);
   number_unknowns (arena, measured);
+  if (measured->unknowns > FACTOR_DENSE) {
+    order_unknowns (arena, measured);
+  }
   return measured;
 }
 
 /* ---- A figure at a point ---- */
+
+bool
+figure_is_void (const struct measured *measured, const struct figure *figure)
+{
+  for (size_t i = 0; i < figure->right.count; i++) {
+    size_t column = figure->right.terms[i].column;
+    if (measured->unknown[column] != NOWHERE && !measured->held[column]) {
+      return false;
+    }
+  }
+  return figure->right.count > 0;
+}
 
 double
 figure_value (const struct figure *figure, const double v[])

@@ -23,7 +23,7 @@ struct figure {
   struct form left, right;
   size_t closure;
   double y, u;
-  bool void_;                    /* of a stream that is nothing: says nothing */
+  double closed_y;               /* of a whole analysis, brought to one */
 };
 
 /* How a fact counts.  */
@@ -38,6 +38,7 @@ struct measured {
   size_t figures; const struct figure *figure;
   double flow;                   /* a usual one */
   const double *scale;           /* by unknown */
+  const size_t *order;           /* of elimination, or null */
 
   /* What may change between one reconciliation and the next.  */
   bool *left_out;                /* by figure: counts as not measured */
@@ -50,6 +51,9 @@ bool fact_is_measured (const struct network *, const struct fact *);
 /* STANDING by fact.  */
 struct measured *measured_make (struct arena *, const struct network *,
                                 const enum standing standing[]) MUST_CHECK;
+
+/* Is it of a stream that is nothing, or held at nothing?  It says nothing then.  */
+bool figure_is_void (const struct measured *, const struct figure *);
 
 /* The figure at a point, and what it is made of (RIGHT 1 where there is none).  */
 double figure_value (const struct figure *, const double v[]);
@@ -72,7 +76,9 @@ struct tangent {
   size_t bends, held;            /* where in the exact rows these begin */
   const size_t *figure;          /* by measured row */
 };
-/* START: without bends and closures, ratios as rows left - y right.  */
+/* START: without bends and closures, ratios as rows left - y right with right taken as at least
+   MEASURED_LEAST usual flows, and a weak row for each unknown that it stays where it is.  */
+#define MEASURED_LEAST 1e-3
 struct tangent tangent_make (struct arena *, const struct measured *, const double v[],
                              bool start) MUST_CHECK;
 

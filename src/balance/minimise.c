@@ -13,13 +13,14 @@ enum { STEPS = 200, HALVINGS = 40 };
 /* Where a step ends: the weighted figures move by less than CLOSE of their uncertainty and the
    exact rows are met to MET of their terms.  NOISE: as little may be rounding, if steps no longer
    shrink.  */
-static const double CLOSE = 1e-10, MET = 1e-12, NOISE = 1e-6;
+static const double CLOSE = 1e-9, MET = 1e-12, NOISE = 1e-6;
 /* Rows that miss by more than this share of their terms contradict each other.  */
 static const double AGREED = 1e-9;
-/* How near a step may come to where a total or a closure is zero; Armijo's share.  */
+/* How far a step may take a total or a closure towards zero; Armijo's share.  */
 static const double NEAREST = 0.9, DESCENT = 1e-4;
-/* What a flow starts with at least, in usual flows.  */
-static const double LEAST_START = 1e-3;
+/* In usual flows: a flow that is next to nothing at the start.  */
+static const double NOTHING = 1e-6;
+enum { PASSES = 3 };
 
 struct search {
   struct arena *arena;           /* work: forgotten after each step */
@@ -73,29 +74,17 @@ merit (const struct tangent *t, double penalty)
 
 /* ---- The start ---- */
 
-/* Raises what would make a total zero or less.  */
-static void
-raise_form (const struct measured *measured, const struct form *form, double v[])
-{
-  double least = LEAST_START * measured->flow;
-  if (form->count == 0 || form_value (form, v) >= least) {
-    return;
-  }
-  for (size_t i = 0; i < form->count; i++) {
-    size_t j = form->terms[i].column;
-    if (measured->unknown[j] != NOWHERE) {
-      v[j] = fmax (v[j], least);
-    }
-  }
-}
-
+/* Raises a flow that is next to nothing, as something is divided by it.  */
 static void
 raise_stream (const struct measured *measured, size_t stream, double v[])
 {
   size_t parts = measured->network->components;
+  if (fabs (system_total (measured->system, v, stream)) > NOTHING * measured->flow) {
+    return;
+  }
   for (size_t j = stream * parts; j < (stream + 1) * parts; j++) {
-    if (measured->unknown[j] != NOWHERE && v[j] < LEAST_START * measured->flow) {
-      v[j] = LEAST_START * measured->flow;
+    if (measured->unknown[j] != NOWHERE && !measured->held[j]) {
+      v[j] = MEASURED_LEAST * measured->flow;
     }
   }
 }
@@ -105,7 +94,10 @@ raise_all (const struct measured *measured, double v[])
 {
   const struct system *system = measured->system;
   for (size_t i = 0; i < measured->figures; i++) {
-    raise_form (measured, &measured->figure[i].right, v);
+    if (measured->figure[i].right.count > 0) {
+      size_t column = measured->figure[i].right.terms[0].column;
+      raise_stream (measured, column / measured->network->components, v);
+    }
   }
   for (size_t i = 0; i < system->bends; i++) {
     raise_stream (measured, system->bend[i].inlet, v);
@@ -123,8 +115,8 @@ add_step (const struct measured *measured, const double from[], double share, co
   }
 }
 
-/* Equal flows everywhere, then twice the linear problem without bends and closures, ratios taken
-   as rows by the flows there are.  */
+/* Equal flows everywhere, then some times the linear problem without bends and closures, ratios
+   taken as rows by the flows there are.  */
 static void
 start (struct search *s)
 {
@@ -135,37 +127,35 @@ start (struct search *s)
     double flow = measured->flow / (double) measured->network->components;
     s->v[i] = there ? (i < columns ? flow : 1) : 0;
   }
-  for (int pass = 0; pass < 2; pass++) {
+  for (int pass = 0; pass < PASSES; pass++) {
     struct tangent t = tangent_make (s->arena, measured, s->v, true);
     const struct factor *factor = factor_make (s->arena, &t.equations);
     factor_solve (factor, s->arena, t.c, t.e, s->d);
     add_step (measured, s->v, 1, s->d, s->v);
-    raise_all (measured, s->v);
     arena_reset (s->arena);
   }
+  raise_all (measured, s->v);
 }
 
 /* ---- A step ---- */
 
-/* Shortens SHARE so that FORM keeps a tenth of what it has.  */
+/* Shortens SHARE so that what is NOW and would be THEN keeps a tenth of what it is.  */
 static double
-keep_form (const struct search *s, const struct form *form, double share)
+keep (double now, double then, double share)
 {
-  double now = form_value (form, s->v), then = form_value (form, s->trial);
-  bool leaves = form->count > 0 && now > 0 && now + share * (then - now) < (1 - NEAREST) * now;
-  return leaves ? NEAREST * now / (now - then) : share;
+  bool leaves = fabs (now) > 0 && 1 + share * (then / now - 1) < 1 - NEAREST;
+  return leaves ? NEAREST / (1 - then / now) : share;
 }
 
 static double
 keep_stream (const struct search *s, size_t stream, double share)
 {
-  double now = system_total (s->measured->system, s->v, stream);
-  double then = system_total (s->measured->system, s->trial, stream);
-  bool leaves = now > 0 && now + share * (then - now) < (1 - NEAREST) * now;
-  return leaves ? NEAREST * now / (now - then) : share;
+  const struct system *system = s->measured->system;
+  return keep (system_total (system, s->v, stream), system_total (system, s->trial, stream),
+               share);
 }
 
-/* How much of the step keeps every denominator above zero.  */
+/* How much of the step keeps every denominator on its side of zero.  */
 static double
 longest_share (struct search *s)
 {
@@ -175,11 +165,12 @@ longest_share (struct search *s)
   add_step (measured, s->v, 1, s->d, s->trial);
   for (size_t i = 0; i < measured->figures; i++) {
     const struct figure *figure = &measured->figure[i];
-    share = keep_form (s, &figure->right, share);
+    if (figure->right.count > 0 && !figure_is_void (measured, figure)) {
+      share = keep (form_value (&figure->right, s->v), form_value (&figure->right, s->trial),
+                    share);
+    }
     if (figure->closure != NOWHERE) {
-      double now = s->v[figure->closure], then = s->trial[figure->closure];
-      bool leaves = now + share * (then - now) < (1 - NEAREST) * now;
-      share = leaves ? NEAREST * now / (now - then) : share;
+      share = keep (s->v[figure->closure], s->trial[figure->closure], share);
     }
   }
   for (size_t i = 0; i < system->bends; i++) {

@@ -38,6 +38,18 @@ largest_flow (const struct measured *measured, const double v[])
   return most;
 }
 
+/* A stream whose total is below zero is held as a whole: its fractions say nothing then.  */
+static void
+hold_streams (struct attempt *a, const bool open[], double least)
+{
+  struct measured *measured = a->measured;
+  size_t parts = measured->network->components;
+  for (size_t j = 0; j < measured->network->streams * parts; j++) {
+    bool below = system_total (measured->system, a->fit.v, j / parts) < least;
+    measured->held[j] = measured->held[j] || (below && !open[j]);
+  }
+}
+
 /* Holds at zero what came out below; was there any?  A flow that is open is left alone.  */
 static bool
 hold_negative (struct attempt *a)
@@ -50,6 +62,9 @@ hold_negative (struct attempt *a)
     if (a->fit.v[j] < least && !open[j] && !measured->held[j]) {
       a->measured->held[j] = any = true;
     }
+  }
+  if (any) {
+    hold_streams (a, open, least);
   }
   arena_reset (a->scratch);
   return any;
@@ -76,6 +91,21 @@ wants_up (struct attempt *a, size_t row)
   return along > BELOW * a->measured->flow * size;
 }
 
+/* Is the stream of column J held as a whole, though it has several components?  What it would rise
+   with is unknown then.  */
+static bool
+is_held_whole (const struct measured *measured, size_t j)
+{
+  size_t parts = measured->network->components, first = j - j % parts, there = 0;
+  for (size_t k = first; k < first + parts; k++) {
+    there += measured->unknown[k] != NOWHERE;
+    if (measured->unknown[k] != NOWHERE && !measured->held[k]) {
+      return false;
+    }
+  }
+  return there > 1;
+}
+
 /* Lets go the first held flow that wants to rise: Lawson and Hanson, Solving Least Squares Problems
    (1974), chapter 23.  */
 static bool
@@ -83,9 +113,12 @@ release (struct attempt *a)
 {
   size_t row = a->fit.tangent.held;
   for (size_t j = 0; j < a->measured->system->columns; j++) {
-    if (a->measured->held[j] && a->measured->unknown[j] != NOWHERE && wants_up (a, row++)) {
-      a->measured->held[j] = false;
-      return true;
+    if (a->measured->held[j] && a->measured->unknown[j] != NOWHERE) {
+      if (!is_held_whole (a->measured, j) && wants_up (a, row)) {
+        a->measured->held[j] = false;
+        return true;
+      }
+      row++;
     }
   }
   return false;

@@ -5,6 +5,9 @@
 #include <math.h>
 #include "support/arena.h"
 
+/* How uncertain a first guess is, in usual flows.  */
+static const double GUESS = 30;
+
 /* Adds the rows of the system to C, and what they are short of.  */
 static void
 add_rows (const struct measured *measured, const struct rows *rows, const double v[],
@@ -53,10 +56,25 @@ add_form (const struct measured *measured, const struct form *form, double facto
   }
 }
 
-/* The row of a figure and what it is short of, both over u; at the start as left - y right.  */
+/* The row of a figure as left - y right, over u and what the right side may be.  */
+static double
+add_start_row (const struct measured *measured, const struct figure *figure, const double v[],
+               struct sparse *G)
+{
+  bool ratio = figure->right.count > 0;
+  double left = form_value (&figure->left, v), right = form_value (&figure->right, v);
+  double over = ratio ? fmax (fabs (right), MEASURED_LEAST * measured->flow) : 1;
+  double weight = 1 / (figure->u * over);
+  sparse_begin (G);
+  add_form (measured, &figure->left, weight, G);
+  add_form (measured, &figure->right, -weight * figure->closed_y, G);
+  return weight * (figure->closed_y * (ratio ? right : 1) - left);
+}
+
+/* The row of a figure and what it is short of, both over u.  */
 static double
 add_figure_row (const struct measured *measured, const struct figure *figure, const double v[],
-                bool start, struct sparse *G)
+                struct sparse *G)
 {
   double left = form_value (&figure->left, v);
   double right = figure->right.count > 0 ? form_value (&figure->right, v) : 1;
@@ -64,14 +82,23 @@ add_figure_row (const struct measured *measured, const struct figure *figure, co
   double weight = 1 / (figure->u * right), ratio = left / right;
   sparse_begin (G);
   add_form (measured, &figure->left, weight * closure, G);
-  add_form (measured, &figure->right, -weight * (start ? figure->y : closure * ratio), G);
-  if (figure->closure != NOWHERE && !start) {
+  add_form (measured, &figure->right, -weight * closure * ratio, G);
+  if (figure->closure != NOWHERE) {
     sparse_add (G, measured->unknown[figure->closure], ratio / figure->u);
   }
-  if (start && figure->right.count > 0) {
-    return -weight * (left - figure->y * right);
-  }
   return (figure->y - closure * ratio) / figure->u;
+}
+
+/* At the start every flow is measured, ever so weakly, as what it is now: what the figures leave
+   open or nearly so stays where it is.  */
+static void
+add_guesses (const struct measured *measured, struct tangent *t)
+{
+  struct sparse *G = &t->equations.measured;
+  for (size_t k = 0; k < measured->unknowns; k++) {
+    sparse_begin (G);
+    sparse_add (G, k, 1 / (GUESS * measured->scale[k]));
+  }
 }
 
 static size_t
@@ -90,16 +117,22 @@ add_measured (struct arena *arena, const struct measured *measured, const double
 {
   struct sparse *G = &t->equations.measured;
   size_t *of = ARENA_ARRAY (arena, measured->figures + 1, size_t);
-  *G = sparse_make (arena, measured->figures, measured_terms (measured));
-  t->e = ARENA_ARRAY (arena, measured->figures + 1, double);
+  size_t guesses = start ? measured->unknowns : 0;
+  *G = sparse_make (arena, measured->figures + guesses, measured_terms (measured) + guesses);
+  t->e = ARENA_ARRAY (arena, measured->figures + guesses + 1, double);
   for (size_t i = 0; i < measured->figures; i++) {
-    if (!measured->left_out[i] && !measured->figure[i].void_) {
+    const struct figure *figure = &measured->figure[i];
+    if (!measured->left_out[i] && !figure_is_void (measured, figure)) {
       of[G->count] = i;
-      double e = add_figure_row (measured, &measured->figure[i], v, start, G);
+      double e = start ? add_start_row (measured, figure, v, G)
+                       : add_figure_row (measured, figure, v, G);
       t->e[G->count - 1] = e;
     }
   }
   t->figure = of;
+  if (start) {
+    add_guesses (measured, t);
+  }
 }
 
 struct tangent
@@ -107,7 +140,7 @@ tangent_make (struct arena *arena, const struct measured *measured, const double
 {
   const struct system *system = measured->system;
   struct tangent t = { .equations = { .unknowns = measured->unknowns,
-                                      .scale = measured->scale } };
+                                      .scale = measured->scale, .order = measured->order } };
   struct rows bent = { .count = 0 };
   if (!start && system->bends > 0) {
     bent = system_bent (arena, system, v);

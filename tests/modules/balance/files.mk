@@ -11,6 +11,13 @@ suites += %D%/t_conflict
   %D%/t_conflict.c
 %C%_t_conflict_LDADD = $(with_balance)
 
+suites += %D%/t_factor
+%C%_t_factor_SOURCES = \
+  %D%/metered.c \
+  %D%/metered.h \
+  %D%/t_factor.c
+%C%_t_factor_LDADD = $(with_balance)
+
 suites += %D%/t_gross
 %C%_t_gross_SOURCES = \
   %D%/metered.c \

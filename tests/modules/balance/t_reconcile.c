@@ -410,6 +410,56 @@ held_at_zero (void)
   metered_clear (&plant);
 }
 
+/* out = in + leak; flows and analyses would both have the leak below zero.  It is nothing then,
+   what was analysed of it says nothing, and in and out are one gas, seen twice.  */
+static void
+held_as_a_whole (void)
+{
+  struct metered plant;
+  struct solution s;
+  int kind;
+  metered_init (&plant, 2, 3);
+  metered_boundary (&plant, BOUNDARY_MIX, "0 1 = 2");
+  metered_total (&plant, 0, 100, 1);
+  metered_total (&plant, 2, 99, 1);
+  metered_fraction (&plant, 0, 0, 0.50, 0.01);
+  metered_fraction (&plant, 2, 0, 0.48, 0.01);
+  metered_fraction (&plant, 1, 0, 0.90, 0.01);
+  NEED (metered_reconcile (&plant, &s, &kind));
+  SAME_INT (s.held_count, 2);
+  NEAR (metered_total_value (&plant, &s, 0), 99.5, 1e-10);
+  NEAR (metered_total_value (&plant, &s, 2), 99.5, 1e-10);
+  NEAR (s.fraction[0], 0.49, 1e-10);
+  NEAR (s.chi2, 0.5 + 2, 1e-9);
+  SAME_INT (s.freedom, 2);
+  SAME_INT (s.adjustments[4].class, FIGURE_UNOBSERVABLE);
+  CHECK (isnan (s.adjustments[4].z));
+  CHECK (!s.fixed_fraction[2] && isnan (s.fraction[2]));
+  metered_clear (&plant);
+}
+
+/* An analysis that adds up to 1.1 does not press its flow to zero, however certain it is.  */
+static void
+poor_closure (void)
+{
+  static const double x[] = { 0.66, 0.33, 0.11 }, u[] = { 1e-4, 1e-4, 1e-4 };
+  struct metered plant;
+  struct solution s;
+  int kind;
+  metered_init (&plant, 3, 3);
+  metered_boundary (&plant, BOUNDARY_MIX, "0 1 = 2");
+  for (size_t i = 0; i < 3; i++) {
+    metered_composition (&plant, i, x, u);
+    metered_total (&plant, i, i == 2 ? 30 : 15, 0.1);
+  }
+  NEED (metered_reconcile (&plant, &s, &kind));
+  SAME_INT (s.freedom, 3);                       /* one balance for each component */
+  CHECK (s.chi2 < 1e-12);
+  NEAR (s.value[0], 9, 1e-10);
+  NEAR (s.fraction[1], 0.3, 1e-10);
+  metered_clear (&plant);
+}
+
 /* ---- Exact figures beside measured ones ---- */
 
 /* Three flows without uncertainty that close but for the last digit, and a meter.  */
@@ -489,6 +539,8 @@ static const struct test_case cases[] = {
   { "a split of unknown share has one composition", split_of_unknown_share },
   { "a measured share counts", measured_share },
   { "a flow is not reconciled to below zero", held_at_zero },
+  { "a stream that would run backwards is held as a whole", held_as_a_whole },
+  { "an analysis far from one leaves its flow alone", poor_closure },
   { "exact figures that clash count with their digits", last_digits_clash },
   { "exact figures that agree stay exact", exact_stays_exact },
   { NULL, NULL }
