@@ -3,11 +3,14 @@
 
 #include <gsl/gsl_cdf.h>
 #include <math.h>
-#include "balance/rank.h"
+#include <string.h>
+#include "balance/reduce.h"
 #include "support/arena.h"
 
 /* Facts without a figure wrong are taken for clashing once in ten thousand.  */
 static const double least_p = 1e-4;
+/* A row is independent of others if more than this part of it is orthogonal to them.  */
+static const double dependent = 1e-10;
 /* Facts of exact figures clash when they are out by more than this, relative.  */
 static const double out_of_exact = 1e-9;
 
@@ -85,66 +88,92 @@ largest_right (const struct system *system)
   return largest;
 }
 
-/* The solution for facts with RIGHT sides (scaled) that agree.  */
-static void
-solve_for (struct core *core, const double right[])
+/* The shortest Y with L'S y = rho, for rows of L'S that may depend on each other: one row after
+   the other, each made orthogonal to those before; how many do not.                             */
+static size_t
+shortest (size_t facts, size_t k, const double ls[], const double rho[], double y[], double q[])
 {
-  struct system *system = core->system;
-  size_t facts = system->rows.count - system->structure;
-  struct space space = space_make (core->arena, facts, system->width, system->reduced);
-  double *z = ARENA_ARRAY (core->arena, system->width + 1, double), *v;
-  space_solve (core->arena, &space, right, z);
-  v = matrix_product (core->arena, system->columns, system->width, 1, system->base, z);
-  for (size_t j = 0; j < system->columns; j++) {
-    core->v[j] = v[j] * system->scale[j];
+  size_t rank = 0;
+  for (size_t c = 0; c < k; c++) {
+    const double *row = &ls[c * facts];
+    double *next = &q[rank * facts], size = 0, left = 0, gap = rho[c];
+    memcpy (next, row, facts * sizeof *next);
+    for (size_t p = 0; p < 2 * rank; p++) {
+      double along = 0;
+      for (size_t i = 0; i < facts; i++) {
+        along += q[p % rank * facts + i] * next[i];
+      }
+      for (size_t i = 0; i < facts; i++) {
+        next[i] -= along * q[p % rank * facts + i];
+      }
+    }
+    for (size_t i = 0; i < facts; i++) {
+      size += row[i] * row[i];
+      left += next[i] * next[i];
+      gap -= row[i] * y[i];
+    }
+    if (left > dependent * dependent * size) {
+      for (size_t i = 0; i < facts; i++) {
+        y[i] += gap * next[i] / left;
+        next[i] /= sqrt (left);
+      }
+      rank++;
+    }
   }
+  return rank;
 }
 
 /* With L' the left null vectors, S the figures' standard deviations and b the right sides, the
    smallest changes y of the figures that make all rows hold are the shortest y with L'S y = L'b;
    |y|^2 is chi-square with as many degrees of freedom as L'S has rank.                          */
-void
-core_agree (struct core *core)
+static void
+judge (struct core *core, const double rho[], double tolerance)
 {
-  struct system *system = core->system;
-  size_t facts = system->rows.count - system->structure, k = system->surplus;
+  const struct system *system = core->system;
+  size_t facts = system->rows.count - system->structure, k = system->surplus, rank;
+  double *ls = ARENA_ARRAY (core->arena, facts * k + 1, double), chi2 = 0;
+  double *q = ARENA_ARRAY (core->arena, facts * (k + 1) + 1, double);
+  double *y = ARENA_ARRAY (core->arena, facts + 1, double);
   double *b = ARENA_ARRAY (core->arena, facts + 1, double);
-  double *rho = ARENA_ARRAY (core->arena, k + 1, double);
-  double *ls = ARENA_ARRAY (core->arena, facts * k + 1, double);
-  double *y = ARENA_ARRAY (core->arena, facts + 1, double), chi2 = 0, most = 0;
-  double tolerance = out_of_exact * largest_right (system);
-  struct space space;
-  find_sigmas (core);
   for (size_t i = 0; i < facts; i++) {
-    b[i] = system->rows.right[system->structure + i] * system->row_scale[system->structure + i];
     for (size_t c = 0; c < k; c++) {
-      rho[c] += system->left[i * k + c] * b[i];
       ls[c * facts + core->figure[i]] += system->left[i * k + c] * core->sigma[i];
     }
   }
+  rank = shortest (facts, k, ls, rho, y, q);
   for (size_t c = 0; c < k; c++) {
+    double out = rho[c];
+    for (size_t i = 0; i < facts; i++) {
+      out -= ls[c * facts + i] * y[i];
+    }
+    core->agree = core->agree && fabs (out) <= tolerance;
+  }
+  for (size_t i = 0; i < facts; i++) {
+    chi2 += y[i] * y[i];
+    b[i] = system->rows.right[system->structure + i] * system->row_scale[system->structure + i]
+           - core->sigma[i] * y[core->figure[i]];
+  }
+  core->p = core->agree ? gsl_cdf_chisq_Q (chi2, (double) rank) : 0;
+  core->agree = core->agree && core->p >= least_p;
+  if (core->agree) {
+    system_solve (system, b, core->v);
+  }
+}
+
+void
+core_agree (struct core *core)
+{
+  const struct system *system = core->system;
+  double *rho = ARENA_ARRAY (core->arena, system->surplus + 1, double), most = 0;
+  double tolerance = out_of_exact * largest_right (system);
+  find_sigmas (core);
+  system_clash (system, core->v, rho);
+  for (size_t c = 0; c < system->surplus; c++) {
     most = fmax (most, fabs (rho[c]));
   }
   core->agree = true;
   core->p = 1;
-  if (most <= tolerance) {
-    return;
-  }
-  space = space_make (core->arena, k, facts, ls);
-  space_solve (core->arena, &space, rho, y);
-  for (size_t c = 0; c < k; c++) {
-    for (size_t i = 0; i < facts; i++) {
-      rho[c] -= ls[c * facts + i] * y[i];
-    }
-    core->agree = core->agree && fabs (rho[c]) <= tolerance;
-  }
-  for (size_t i = 0; i < facts; i++) {
-    chi2 += y[i] * y[i];
-    b[i] -= core->sigma[i] * y[core->figure[i]];
-  }
-  core->p = core->agree ? gsl_cdf_chisq_Q (chi2, (double) space.rank) : 0;
-  core->agree = core->agree && core->p >= least_p;
-  if (core->agree) {
-    solve_for (core, b);
+  if (most > tolerance) {
+    judge (core, rho, tolerance);
   }
 }

@@ -5,6 +5,7 @@
 #include <string.h>
 #include "balance/program.h"
 #include "balance/rank.h"
+#include "balance/reduce.h"
 #include "support/arena.h"
 #include "support/fault.h"
 

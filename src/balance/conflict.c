@@ -4,6 +4,7 @@
 #include <math.h>
 #include <string.h>
 #include "balance/rank.h"
+#include "balance/reduce.h"
 #include "support/arena.h"
 #include "support/fault.h"
 
@@ -220,32 +221,13 @@ thin_out (struct work *work, struct fault *fault)
 }
 
 /* Multipliers of the structure's rows, in the network's own units, that go with those of the
-   facts: S'mu = -F'lambda.                                                                      */
+   facts.                                                                                        */
 static double *
 find_mu (struct work *work)
 {
-  const struct system *system = work->system;
-  const struct rows *rows = &system->rows;
-  size_t n = system->columns, m = system->structure;
-  double *a = ARENA_ARRAY (work->arena, n * m + 1, double);
-  double *b = ARENA_ARRAY (work->arena, n + 1, double);
-  double *mu = ARENA_ARRAY (work->arena, m + 1, double);
-  struct space space;
-  for (size_t i = 0; i < rows->count; i++) {
-    for (size_t e = rows->start[i]; e < rows->start[i + 1]; e++) {
-      size_t j = rows->column[e];
-      double entry = rows->coefficient[e] * system->scale[j] * system->row_scale[i];
-      if (i < m) {
-        a[j * m + i] = entry;
-      } else {
-        b[j] -= entry * work->lambda[i - m];
-      }
-    }
-  }
-  space = space_make (work->arena, n, m, a);
-  space_solve (work->arena, &space, b, mu);
-  for (size_t i = 0; i < m; i++) {
-    mu[i] *= system->row_scale[i];
+  double *mu = system_multipliers (work->arena, work->system, work->lambda);
+  for (size_t i = 0; i < work->system->structure; i++) {
+    mu[i] *= work->system->row_scale[i];
   }
   return mu;
 }

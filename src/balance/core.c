@@ -4,7 +4,7 @@
 #include <math.h>
 #include <string.h>
 #include "balance/program.h"
-#include "balance/rank.h"
+#include "balance/reduce.h"
 #include "balance/solution.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -13,6 +13,9 @@
 static const double same_fraction = 1e-8;
 /* A total below this part of the largest flow is nothing.  */
 static const double no_flow = 1e-10;
+
+/* Open columns times directions up to which bounds are looked after.  */
+static const size_t few = 20000;
 
 bool
 core_goes_on (const struct solve_options *options, struct fault *fault)
@@ -62,7 +65,7 @@ core_generic (struct arena *arena, const struct core *core, size_t count)
   if (core->root) {
     return v;
   }
-  if (core->freedom > 0) {
+  if (core->freedom > 0 && core->freedom * core->system->present <= few) {
     program = program_make (arena, core->system, core->v, core->freedom, core->null);
   }
   for (size_t s = 0; program && program_feasible (program) && s < network->streams; s++) {
@@ -75,9 +78,9 @@ core_generic (struct arena *arena, const struct core *core, size_t count)
   }
   for (size_t i = 0; i < count; i++) {
     v[i] = ARENA_ARRAY (arena, core->system->columns, double);
-    if (!program) {
+    if (core->freedom == 0) {
       memcpy (v[i], core->v, core->system->columns * sizeof **v);
-    } else if (program_feasible (program)) {
+    } else if (program && program_feasible (program)) {
       program_inside (program, i, v[i]);
     } else {
       wander (core, i + 1, v[i]);
@@ -191,7 +194,7 @@ static void
 reduce (struct core *core, const bool take[])
 {
   core->system = system_make (core->arena, core->network, take, core->split);
-  system_reduce (core->arena, core->system);
+  system_reduce (core->arena, core->system, REDUCE_CORE);
   core->v = ARENA_ARRAY (core->arena, core->system->columns + 1, double);
   memcpy (core->v, core->system->particular, core->system->columns * sizeof *core->v);
   core->freedom = core->system->freedom;

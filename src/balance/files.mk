@@ -11,6 +11,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/conflict.h \
   %D%/core.c \
   %D%/core.h \
+  %D%/elimination.c \
+  %D%/elimination.h \
   %D%/factor.c \
   %D%/factor.h \
   %D%/factor_dense.c \
@@ -34,6 +36,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/rank.h \
   %D%/reconcile.c \
   %D%/reconcile.h \
+  %D%/reduce.c \
+  %D%/reduce.h \
   %D%/solution.h \
   %D%/solve.c \
   %D%/suggest.c \

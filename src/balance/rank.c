@@ -130,6 +130,88 @@ space_solve (struct arena *arena, const struct space *space, const double b[], d
   }
 }
 
+/* A column of numbers STRIDE apart.  */
+static double
+column_dot (size_t n, size_t stride, const double a[], const double b[])
+{
+  double sum = 0;
+  for (size_t i = 0; i < n; i++) {
+    sum += a[i * stride] * b[i * stride];
+  }
+  return sum;
+}
+
+static void
+column_add (size_t n, size_t stride, double a[], double factor, const double b[])
+{
+  for (size_t i = 0; i < n; i++) {
+    a[i * stride] += factor * b[i * stride];
+  }
+}
+
+static void
+column_scale (size_t n, size_t stride, double a[], double factor)
+{
+  for (size_t i = 0; i < n; i++) {
+    a[i * stride] *= factor;
+  }
+}
+
+static void
+column_swap (size_t n, size_t stride, double a[], double b[])
+{
+  for (size_t i = 0; i < n; i++) {
+    double keep = a[i * stride];
+    a[i * stride] = b[i * stride];
+    b[i * stride] = keep;
+  }
+}
+
+size_t
+columns_orthonormal (size_t rows, size_t columns, size_t stride, double a[], size_t more,
+                     double along[])
+{
+  size_t done = 0;
+  double none = 0;
+  along = along ? along : &none;
+  for (size_t k = 0; k < columns; k++) {
+    double size = sqrt (column_dot (rows, stride, &a[k], &a[k])
+                        + column_dot (more, stride, &along[k], &along[k]));
+    column_scale (rows, stride, &a[k], size > 0 ? 1 / size : 0);
+    column_scale (more, stride, &along[k], size > 0 ? 1 / size : 0);
+  }
+  for (; done < columns; done++) {
+    size_t best = done;
+    double most = 0;
+    for (size_t k = done; k < columns; k++) {
+      double size = column_dot (rows, stride, &a[k], &a[k]);
+      best = size > most ? k : best;
+      most = fmax (most, size);
+    }
+    if (!(sqrt (most) > tolerance)) {
+      break;
+    }
+    column_swap (rows, stride, &a[done], &a[best]);
+    column_swap (more, stride, &along[done], &along[best]);
+    for (size_t again = 0; again < 2; again++) {
+      for (size_t k = 0; k < done; k++) {
+        double by = column_dot (rows, stride, &a[k], &a[done]);
+        column_add (rows, stride, &a[done], -by, &a[k]);
+        column_add (more, stride, &along[done], -by, &along[k]);
+      }
+    }
+    most = sqrt (column_dot (rows, stride, &a[done], &a[done]));
+    column_scale (rows, stride, &a[done], 1 / most);
+    column_scale (more, stride, &along[done], 1 / most);
+    for (size_t k = done + 1; k < columns; k++) {
+      double by = column_dot (rows, stride, &a[done], &a[k]);
+      column_add (rows, stride, &a[k], -by, &a[done]);
+      column_add (more, stride, &along[k], -by, &along[done]);
+    }
+  }
+  return done;
+}
+
 double *
 matrix_product (struct arena *arena, size_t count, size_t n, size_t width, const double in[],
                 const double m[])
@@ -144,125 +226,4 @@ matrix_product (struct arena *arena, size_t count, size_t n, size_t width, const
     }
   }
   return out;
-}
-
-double *
-system_project (struct arena *arena, const struct system *system, const struct rows *rows,
-                size_t width, const double base[])
-{
-  double *out = ARENA_ARRAY (arena, rows->count * width + 1, double);
-  for (size_t i = 0; i < rows->count; i++) {
-    for (size_t e = rows->start[i]; e < rows->start[i + 1]; e++) {
-      size_t j = rows->column[e];
-      double a = rows->coefficient[e] * system->scale[j];
-      for (size_t k = 0; k < width; k++) {
-        out[i * width + k] += a * base[j * width + k];
-      }
-    }
-  }
-  return out;
-}
-
-/* The facts' rows within the structure's null space, scaled.  */
-static const double *
-reduced (struct arena *arena, const struct system *system, size_t width, const double base[])
-{
-  struct rows facts = system->rows;
-  double *out;
-  facts.start += system->structure;
-  facts.count -= system->structure;
-  out = system_project (arena, system, &facts, width, base);
-  for (size_t i = 0; i < facts.count; i++) {
-    for (size_t k = 0; k < width; k++) {
-      out[i * width + k] *= system->row_scale[system->structure + i];
-    }
-  }
-  return out;
-}
-
-/* The null space of the structure's rows, by column of the network.  */
-static const double *
-structure_null (struct arena *arena, const struct system *system, size_t *freedom)
-{
-  size_t n = system->present, at = 0, *place = ARENA_ARRAY (arena, system->columns + 1, size_t);
-  double *a = ARENA_ARRAY (arena, system->structure * n + 1, double), *out;
-  struct space space;
-  for (size_t j = 0; j < system->columns; j++) {
-    place[j] = system->absence.absent[j] ? NOWHERE : at++;
-  }
-  for (size_t i = 0; i < system->structure; i++) {
-    for (size_t e = system->rows.start[i]; e < system->rows.start[i + 1]; e++) {
-      size_t j = system->rows.column[e];
-      a[i * n + place[j]] = system->rows.coefficient[e] * system->scale[j] * system->row_scale[i];
-    }
-  }
-  space = space_make (arena, system->structure, n, a);
-  *freedom = n - space.rank;
-  out = ARENA_ARRAY (arena, system->columns * *freedom + 1, double);
-  for (size_t j = 0; j < system->columns; j++) {
-    for (size_t k = 0; place[j] != NOWHERE && k < *freedom; k++) {
-      out[j * *freedom + k] = space_null (&space, place[j], k);
-    }
-  }
-  return out;
-}
-
-/* N2, the null space in the coordinates of one null space, in those of the network.  */
-static const double *
-narrowed (struct arena *arena, size_t columns, size_t width, const double null[],
-          const struct space *space)
-{
-  size_t freedom = width - space->rank;
-  double *inner = ARENA_ARRAY (arena, width * freedom + 1, double);
-  for (size_t j = 0; j < width; j++) {
-    for (size_t k = 0; k < freedom; k++) {
-      inner[j * freedom + k] = space_null (space, j, k);
-    }
-  }
-  return matrix_product (arena, columns, width, freedom, null, inner);
-}
-
-void
-system_reduce (struct arena *arena, struct system *system)
-{
-  size_t width, facts = system->rows.count - system->structure;
-  const double *base = structure_null (arena, system, &width);
-  double *b = ARENA_ARRAY (arena, facts + 1, double), *w = ARENA_ARRAY (arena, width + 1, double);
-  double *v, *left;
-  struct space space;
-  system->reduced = reduced (arena, system, width, base);
-  space = space_make (arena, facts, width, system->reduced);
-  for (size_t i = 0; i < facts; i++) {
-    b[i] = system->rows.right[system->structure + i] * system->row_scale[system->structure + i];
-  }
-  space_solve (arena, &space, b, w);
-  v = matrix_product (arena, system->columns, width, 1, base, w);
-  for (size_t j = 0; j < system->columns; j++) {
-    v[j] *= system->scale[j];
-  }
-  system->surplus = facts - space.rank;
-  left = ARENA_ARRAY (arena, facts * system->surplus + 1, double);
-  for (size_t i = 0; i < facts; i++) {
-    for (size_t k = 0; k < system->surplus; k++) {
-      left[i * system->surplus + k] = space_left (&space, i, k);
-    }
-  }
-  system->width = width;
-  system->base = base;
-  system->left = left;
-  system->particular = v;
-  system->freedom = width - space.rank;
-  system->rank = system->present - system->freedom;
-  system->null = narrowed (arena, system->columns, width, base, &space);
-}
-
-const double *
-system_narrow (struct arena *arena, const struct system *system, const double v[],
-               size_t *freedom)
-{
-  struct rows bent = system_bent (arena, system, v);
-  double *h = system_project (arena, system, &bent, system->freedom, system->null);
-  struct space space = space_make (arena, bent.count, system->freedom, h);
-  *freedom = system->freedom - space.rank;
-  return narrowed (arena, system->columns, system->freedom, system->null, &space);
 }

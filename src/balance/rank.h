@@ -1,4 +1,4 @@
-/* Rank, null spaces and least squares of dense matrices, and of a system's rows.
+/* Rank, null spaces and least squares of dense matrices.
 
    A = Q R Z' by Householder reflections with column pivots (the complete orthogonal decomposition:
    Golub, Van Loan, Matrix Computations, 4th ed. 2013, 5.4.7).  What is below 1e-10 of the largest
@@ -9,7 +9,6 @@
 
 #include <stdbool.h>
 #include <stddef.h>
-#include "balance/system.h"
 
 struct arena;
 
@@ -27,19 +26,15 @@ double space_left (const struct space *, size_t i, size_t k);
 /* X of least norm that makes A X - B least.  */
 void space_solve (struct arena *, const struct space *, const double b[], double x[]);
 
-/* Fills in what the rows of SYSTEM come to: first the structure, then the facts within its null
-   space, so that a surplus is one of facts.                                                     */
-void system_reduce (struct arena *, struct system *);
-
-/* The null space within the null space of SYSTEM which the bends leave at V: [column * *freedom +
-   k] as in the system.  */
-const double *system_narrow (struct arena *, const struct system *, const double v[],
-                             size_t *freedom);
-/* ROWS times scale times BASE (columns x WIDTH): what a step along each vector of BASE changes.  */
-double *system_project (struct arena *, const struct system *, const struct rows *, size_t width,
-                        const double base[]);
 /* OUT = IN (COUNT x N, row by row) times the matrix M (N x WIDTH).  */
 double *matrix_product (struct arena *, size_t count, size_t n, size_t width, const double in[],
                         const double m[]);
+
+/* Makes the columns of A (ROWS x COLUMNS, STRIDE doubles a row) orthonormal and closes up the gaps
+   of those that depend on others; how many are left.  ALONG (MORE rows of the same) is combined in
+   the same way; null with MORE 0.  By modified Gram and Schmidt, twice (Bjorck, Numerical Methods
+   for Least Squares Problems, 1996, 2.4), the longest first.                                    */
+size_t columns_orthonormal (size_t rows, size_t columns, size_t stride, double a[], size_t more,
+                            double along[]);
 
 #endif

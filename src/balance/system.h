@@ -16,7 +16,7 @@
 #include "balance/absent.h"
 #include "balance/network.h"
 
-struct arena;
+struct arena; struct reduction;
 
 enum row_kind { ROW_BALANCE, ROW_SPLIT, ROW_FACT };
 /* Whose row it is: of boundary or fact `of`.  COMPONENT is NOWHERE where it has none.  */
@@ -59,15 +59,14 @@ struct system {
   const double *scale;           /* by column, powers of two: v = scale * w */
   const double *row_scale;       /* by row: the scaled row is row_scale * row * scale */
 
-  /* Filled in by `system_reduce` (rank.h), with bends not yet counted.  W are the scaled unknowns
+  /* Filled in by `system_reduce` (reduce.h), with bends not yet counted.  W are the scaled unknowns
      and facts are the rows from `structure` on, scaled.                                         */
   size_t rank, freedom, surplus;
   const double *null;            /* [column * freedom + k], orthonormal in w; absent columns 0 */
   const double *particular;      /* by column, in v: least squares where the facts clash */
-  size_t width;                  /* what the structure leaves free */
-  const double *base;            /* [column * width + k]: its null space */
-  const double *reduced;         /* [fact row * width + k]: facts in it */
-  const double *left;            /* [fact row * surplus + k]: their left null space */
+  const double *left;            /* [fact row * surplus + k]: multipliers of facts which some of the
+                                    structure's take to nothing, orthonormal */
+  const struct reduction *reduction;
 };
 
 /* The rows of NETWORK with the facts in TAKE, with the splits as SPLIT says (null: bent, but for

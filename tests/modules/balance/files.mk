@@ -11,6 +11,10 @@ suites += %D%/t_conflict
   %D%/t_conflict.c
 %C%_t_conflict_LDADD = $(with_balance)
 
+suites += %D%/t_elimination
+%C%_t_elimination_SOURCES = %D%/t_elimination.c
+%C%_t_elimination_LDADD = $(with_balance)
+
 suites += %D%/t_factor
 %C%_t_factor_SOURCES = \
   %D%/metered.c \

@@ -5,6 +5,7 @@
 #include "libtest.h"
 #include "plant.h"
 #include "balance/rank.h"
+#include "balance/reduce.h"
 #include "balance/system.h"
 #include "support/arena.h"
 
@@ -52,7 +53,7 @@ collinear_blend (void)
     plant_fraction (plant, "ABCP"[s], 1, 0.3);
   }
   system = system_make (plant->arena, &plant->network, take_all, NULL);
-  system_reduce (plant->arena, system);
+  system_reduce (plant->arena, system, REDUCE_CORE);
   SAME_INT (system->present, 12);
   SAME_INT (system->rows.count, 12);
   SAME_INT (system->rank, 11);
@@ -77,7 +78,7 @@ narrows_by_bends (void)
   plant_total (plant, 'F', 100);
   plant_composition (plant, 'F', x);
   system = system_make (plant->arena, &plant->network, take_all, NULL);
-  system_reduce (plant->arena, system);
+  system_reduce (plant->arena, system, REDUCE_CORE);
   SAME_INT (system->freedom, 3);
   system_narrow (plant->arena, system, v, &freedom);
   SAME_INT (freedom, 1);

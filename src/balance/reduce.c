@@ -1,0 +1,207 @@
+#include "config.h"
+#include "balance/reduce.h"
+
+#include <math.h>
+#include <string.h>
+#include "balance/elimination.h"
+#include "balance/rank.h"
+#include "support/arena.h"
+
+/* Rounds of solving for what the rows are still out by.  */
+enum { REFINEMENTS = 2 };
+
+struct reduction {
+  struct sparse a;               /* scaled; columns are those present */
+  const size_t *column;          /* of the network, by column of `a` */
+  struct elimination *elimination;
+  double *structure;             /* [structure row * surplus + k]: with `left` */
+};
+
+static struct reduction *
+scaled_rows (struct arena *arena, const struct system *system)
+{
+  struct reduction *out = ARENA_NEW (arena, struct reduction);
+  const struct rows *rows = &system->rows;
+  size_t entries = rows->start[rows->count], present = 0;
+  size_t *place = ARENA_ARRAY (arena, system->columns + 1, size_t);
+  size_t *network = ARENA_ARRAY (arena, system->present + 1, size_t);
+  size_t *column = ARENA_ARRAY (arena, entries + 1, size_t);
+  double *value = ARENA_ARRAY (arena, entries + 1, double);
+  for (size_t j = 0; j < system->columns; j++) {
+    if (!system->absence.absent[j]) {
+      network[present] = j;
+      place[j] = present++;
+    }
+  }
+  for (size_t i = 0; i < rows->count; i++) {
+    for (size_t e = rows->start[i]; e < rows->start[i + 1]; e++) {
+      size_t j = rows->column[e];
+      column[e] = place[j];
+      value[e] = rows->coefficient[e] * system->scale[j] * system->row_scale[i];
+    }
+  }
+  out->a = (struct sparse) { rows->count, present, rows->start, column, value };
+  out->column = network;
+  return out;
+}
+
+/* The null space, orthonormal, by column of the network.  */
+static void
+find_null (struct arena *arena, struct system *system)
+{
+  const struct reduction *r = system->reduction;
+  size_t n = r->a.columns, d = n - elimination_rank (r->elimination);
+  double *x = ARENA_ARRAY (arena, n + 1, double);
+  double *null = ARENA_ARRAY (arena, system->columns * d + 1, double);
+  for (size_t k = 0; k < d; k++) {
+    elimination_null (r->elimination, k, x);
+    for (size_t j = 0; j < n; j++) {
+      null[r->column[j] * d + k] = x[j];
+    }
+  }
+  columns_orthonormal (system->columns, d, d, null, 0, NULL);
+  system->null = null;
+  system->freedom = d;
+  system->rank = n - d;
+}
+
+/* Multipliers that take rows to nothing: those of facts orthonormal, what only balances say left
+   out, those of the structure beside them.                                                      */
+static void
+find_left (struct arena *arena, struct system *system, struct reduction *r)
+{
+  size_t m = r->a.rows, k = m - elimination_rank (r->elimination), kept, s = system->structure;
+  size_t facts = m - s;
+  double *y = ARENA_ARRAY (arena, m + 1, double);
+  double *all = ARENA_ARRAY (arena, m * k + 1, double);
+  double *left;
+  for (size_t c = 0; c < k; c++) {
+    elimination_left (r->elimination, c, y);
+    for (size_t i = 0; i < m; i++) {
+      all[(i < s ? facts + i : i - s) * k + c] = y[i];
+    }
+  }
+  kept = columns_orthonormal (facts, k, k, all, s, &all[facts * k]);
+  left = ARENA_ARRAY (arena, facts * kept + 1, double);
+  r->structure = ARENA_ARRAY (arena, s * kept + 1, double);
+  for (size_t i = 0; i < m && kept > 0; i++) {
+    memcpy (i < facts ? &left[i * kept] : &r->structure[(i - facts) * kept], &all[i * k],
+            kept * sizeof *left);
+  }
+  system->left = left;
+  system->surplus = kept;
+}
+
+void
+system_solve (const struct system *system, const double right[], double v[])
+{
+  const struct reduction *r = system->reduction;
+  struct arena *arena = arena_create ();
+  double *b = ARENA_ARRAY (arena, r->a.rows + 1, double);
+  double *w = ARENA_ARRAY (arena, r->a.columns + 1, double);
+  double *step = ARENA_ARRAY (arena, r->a.columns + 1, double);
+  for (int round = 0; round <= REFINEMENTS; round++) {
+    for (size_t i = 0; i < r->a.rows; i++) {
+      long double sum = i < system->structure ? 0 : right[i - system->structure];
+      for (size_t e = r->a.start[i]; e < r->a.start[i + 1]; e++) {
+        sum -= (long double) r->a.value[e] * w[r->a.column[e]];
+      }
+      b[i] = (double) sum;
+    }
+    elimination_solve (r->elimination, b, step);
+    for (size_t j = 0; j < r->a.columns; j++) {
+      w[j] += step[j];
+    }
+  }
+  memset (v, 0, system->columns * sizeof *v);
+  for (size_t j = 0; j < r->a.columns; j++) {
+    v[r->column[j]] = w[j] * system->scale[r->column[j]];
+  }
+  arena_destroy (arena);
+}
+
+void
+system_reduce (struct arena *arena, struct system *system, size_t core)
+{
+  struct reduction *r = scaled_rows (arena, system);
+  size_t facts = system->rows.count - system->structure;
+  double *right = ARENA_ARRAY (arena, facts + 1, double);
+  double *v = ARENA_ARRAY (arena, system->columns + 1, double);
+  r->elimination = elimination_make (arena, &r->a, core);
+  system->reduction = r;
+  find_null (arena, system);
+  find_left (arena, system, r);
+  for (size_t i = 0; i < facts; i++) {
+    right[i] = system->rows.right[system->structure + i]
+               * system->row_scale[system->structure + i];
+  }
+  system_solve (system, right, v);
+  system->particular = v;
+}
+
+void
+system_clash (const struct system *system, const double v[], double rho[])
+{
+  size_t k = system->surplus, m = system->structure;
+  memset (rho, 0, k * sizeof *rho);
+  for (size_t i = 0; i < system->rows.count && k > 0; i++) {
+    double out = -rows_residual (&system->rows, i, v) * system->row_scale[i];
+    const double *multiplier = i < m ? &system->reduction->structure[i * k]
+                                     : &system->left[(i - m) * k];
+    for (size_t c = 0; c < k; c++) {
+      rho[c] += multiplier[c] * out;
+    }
+  }
+}
+
+double *
+system_multipliers (struct arena *arena, const struct system *system, const double facts[])
+{
+  size_t k = system->surplus, count = system->rows.count - system->structure;
+  double *mu = ARENA_ARRAY (arena, system->structure + 1, double);
+  for (size_t c = 0; c < k; c++) {
+    double along = 0;
+    for (size_t i = 0; i < count; i++) {
+      along += system->left[i * k + c] * facts[i];
+    }
+    for (size_t i = 0; i < system->structure; i++) {
+      mu[i] += along * system->reduction->structure[i * k + c];
+    }
+  }
+  return mu;
+}
+
+double *
+system_project (struct arena *arena, const struct system *system, const struct rows *rows,
+                size_t width, const double base[])
+{
+  double *out = ARENA_ARRAY (arena, rows->count * width + 1, double);
+  for (size_t i = 0; i < rows->count; i++) {
+    for (size_t e = rows->start[i]; e < rows->start[i + 1]; e++) {
+      size_t j = rows->column[e];
+      double a = rows->coefficient[e] * system->scale[j];
+      for (size_t k = 0; k < width; k++) {
+        out[i * width + k] += a * base[j * width + k];
+      }
+    }
+  }
+  return out;
+}
+
+const double *
+system_narrow (struct arena *arena, const struct system *system, const double v[],
+               size_t *freedom)
+{
+  struct rows bent = system_bent (arena, system, v);
+  size_t width = system->freedom;
+  double *h = system_project (arena, system, &bent, width, system->null), *inner;
+  struct space space = space_make (arena, bent.count, width, h);
+  *freedom = width - space.rank;
+  inner = ARENA_ARRAY (arena, width * *freedom + 1, double);
+  for (size_t j = 0; j < width; j++) {
+    for (size_t k = 0; k < *freedom; k++) {
+      inner[j * *freedom + k] = space_null (&space, j, k);
+    }
+  }
+  return matrix_product (arena, system->columns, width, *freedom, system->null, inner);
+}

@@ -1,0 +1,33 @@
+/* What the rows of a system come to: rank, null space, surplus, solutions.  */
+#ifndef BALANCE_REDUCE_H
+#define BALANCE_REDUCE_H
+
+#include <stddef.h>
+#include "balance/system.h"
+
+struct arena;
+
+/* Fills in what the rows of SYSTEM come to.  A surplus is one of facts: what balances say twice is
+   none.  Up to CORE columns are left to dense algebra; REDUCE_CORE is what pays.                */
+enum { REDUCE_CORE = 100 };
+void system_reduce (struct arena *, struct system *, size_t core);
+/* The solution for facts with the scaled RIGHT sides, by fact row, in place of the system's own;
+   they must agree.                                                                              */
+void system_solve (const struct system *, const double right[], double v[]);
+/* The multipliers of the structure's rows (scaled) that take those of the facts to nothing.  */
+double *system_multipliers (struct arena *, const struct system *, const double facts[]);
+
+/* What the left null vectors make of the scaled right sides: nothing, if the facts agree.  It is
+   worked out from what is left of them at V, any solution or near one, so that rounding does not
+   grow with the flows.                                                                          */
+void system_clash (const struct system *, const double v[], double rho[]);
+
+/* ROWS times scale times BASE (columns x WIDTH): what a step along each vector of BASE changes.  */
+double *system_project (struct arena *, const struct system *, const struct rows *, size_t width,
+                        const double base[]);
+/* The null space within the null space of SYSTEM which the bends leave at V: [column * *freedom +
+   k] as in the system.  */
+const double *system_narrow (struct arena *, const struct system *, const double v[],
+                             size_t *freedom);
+
+#endif
