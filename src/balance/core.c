@@ -93,18 +93,16 @@ void
 core_fractions (const struct core *core, size_t count, double *const v[], double fraction[])
 {
   size_t components = core->network->components;
-  for (size_t j = 0; j < core->network->streams * components; j++) {
-    fraction[j] = (double) NAN;
-    for (size_t i = 0; i < count; i++) {
-      double total = system_total (core->system, v[i], j / components);
-      double flow = core->system->absence.absent[j] ? 0 : v[i][j];
-      double here = fabs (total) > no_flow * largest_flow (core, v[i]) ? flow / total
-                                                                       : (double) NAN;
-      if (i > 0 && !(fabs (here - fraction[j]) <= same_fraction)) {
-        fraction[j] = (double) NAN;
-        break;
+  for (size_t i = 0; i < count; i++) {
+    double least = no_flow * largest_flow (core, v[i]);
+    for (size_t s = 0; s < core->network->streams; s++) {
+      double total = system_total (core->system, v[i], s);
+      for (size_t j = s * components; j < (s + 1) * components; j++) {
+        double flow = core->system->absence.absent[j] ? 0 : v[i][j];
+        double here = fabs (total) > least ? flow / total : (double) NAN;
+        bool same = i == 0 || fabs (here - fraction[j]) <= same_fraction;
+        fraction[j] = same ? here : (double) NAN;
       }
-      fraction[j] = here;
     }
   }
 }
@@ -175,8 +173,9 @@ static bool
 straighten (struct core *core)
 {
   size_t flows = core->network->streams * core->network->components;
-  double *fraction = ARENA_ARRAY (core->arena, flows, double);
-  double **v = core_generic (core->arena, core, 3);
+  double *fraction = ARENA_ARRAY (core->arena, flows, double), **v;
+  core_open (core);
+  v = core_generic (core->arena, core, 3);
   bool any = false;
   core_fractions (core, 3, v, fraction);
   for (size_t i = 0; i < core->system->bends; i++) {
@@ -198,9 +197,17 @@ reduce (struct core *core, const bool take[])
   core->v = ARENA_ARRAY (core->arena, core->system->columns + 1, double);
   memcpy (core->v, core->system->particular, core->system->columns * sizeof *core->v);
   core->freedom = core->system->freedom;
-  core->null = core->system->null;
   core->surplus = core->system->surplus;
   core_agree (core);
+}
+
+void
+core_open (struct core *core)
+{
+  if (!core->system->null) {
+    system_open (core->arena, core->system);
+    core->null = core->system->null;
+  }
 }
 
 /* The linear rows, with all splits that can be made linear; null: interrupted.  */
@@ -231,10 +238,11 @@ core_make (struct arena *arena, const struct network *network, const bool take[]
            const struct solve_options *options, struct fault *fault)
 {
   struct core *core = core_linear (arena, network, take, options, fault);
-  if (core && core->agree && core->system->bends > 0 && !core_bend (core, fault)) {
+  if (!core) {
     return NULL;
   }
-  return core;
+  core_open (core);
+  return !core->agree || core->system->bends == 0 || core_bend (core, fault) ? core : NULL;
 }
 
 bool

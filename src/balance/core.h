@@ -45,6 +45,8 @@ bool core_clashes (struct arena *, const struct network *, const bool take[],
 /* Do the facts agree?  Sets agree, p, sigma, figure and makes `v` the solution nearest to the
    figures.                                                                                      */
 void core_agree (struct core *);
+/* Makes sure that the null space is there.  */
+void core_open (struct core *);
 /* The splits that are still bent, at a solution; false, with a fault: not converged.  */
 bool core_bend (struct core *, struct fault *) MUST_CHECK;
 /* Sets a fault if the user wants to stop.  */

@@ -8,8 +8,8 @@
 
 /* A form whose change along the null space is less than this part of its norm is fixed.  */
 static const double moves_not = 1e-8;
-/* A range narrower than this part of the largest flow has no width.  */
-static const double no_width = 1e-10;
+/* A range narrower than this part of the largest flow, or of its own end, has no width.  */
+static const double no_width = 1e-12, narrow = 1e-9;
 /* A flow is negative when it is below this part of the largest.  */
 static const double below_zero = 1e-9;
 
@@ -119,7 +119,9 @@ classify_by_algebra (struct work *work)
 static bool
 has_width (const struct work *work, const struct range *range)
 {
-  return !(range->greatest - range->least <= no_width * work->unit);
+  double end = fmax (fabs (range->greatest), fabs (range->least));
+  return isinf (end)
+         || range->greatest - range->least > fmax (no_width * work->unit, narrow * end);
 }
 
 /* Ranges of all that is open; what has none is fixed.  */
@@ -151,20 +153,15 @@ find_ranges (struct work *work)
   }
 }
 
-/* A value inside the ranges for what is open, that of its range for what is fixed by it.  */
+/* A value inside the ranges; where there is no solution without a negative flow, the one least
+   so.                                                                                           */
 static void
 choose_values (struct work *work)
 {
-  double *inside = ARENA_ARRAY (work->core->arena, work->columns, double);
-  if (!work->feasible) {
-    program_point (work->program, false, work->value);
-    return;
-  }
-  program_inside (work->program, 0, inside);
-  for (size_t j = 0; j < work->columns; j++) {
-    bool by_range = work->fixed[j] && work->range[j].greatest > work->range[j].least;
-    work->value[j] = by_range ? 0.5 * (work->range[j].least + work->range[j].greatest)
-                              : inside[j];
+  if (work->feasible) {
+    program_inside (work->program, 0, work->value);
+  } else {
+    program_point (work->program, work->value);
   }
 }
 

@@ -23,9 +23,8 @@ struct program *program_make (struct arena *, const struct system *, const doubl
 bool program_feasible (const struct program *);
 /* The least and greatest value of a form (infinite where nothing bounds it).  Only if feasible.  */
 struct range program_range (struct program *, const struct form *);
-/* Where the last search ended, by column of the network; if RAY, gone on along the direction that
-   nothing bounds.                                                                               */
-void program_point (const struct program *, bool ray, double v[]);
+/* Where the last search ended, by column of the network, gone on along what nothing bounds.  */
+void program_point (const struct program *, double v[]);
 
 /* A solution inside the ranges of all forms asked about so far: the mean of where their searches
    ended, equal weights for seed 0, others for others.                                           */

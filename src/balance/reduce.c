@@ -45,12 +45,11 @@ scaled_rows (struct arena *arena, const struct system *system)
   return out;
 }
 
-/* The null space, orthonormal, by column of the network.  */
-static void
-find_null (struct arena *arena, struct system *system)
+void
+system_open (struct arena *arena, struct system *system)
 {
   const struct reduction *r = system->reduction;
-  size_t n = r->a.columns, d = n - elimination_rank (r->elimination);
+  size_t n = r->a.columns, d = system->freedom;
   double *x = ARENA_ARRAY (arena, n + 1, double);
   double *null = ARENA_ARRAY (arena, system->columns * d + 1, double);
   for (size_t k = 0; k < d; k++) {
@@ -61,8 +60,6 @@ find_null (struct arena *arena, struct system *system)
   }
   columns_orthonormal (system->columns, d, d, null, 0, NULL);
   system->null = null;
-  system->freedom = d;
-  system->rank = n - d;
 }
 
 /* Multipliers that take rows to nothing: those of facts orthonormal, what only balances say left
@@ -129,7 +126,8 @@ system_reduce (struct arena *arena, struct system *system, size_t core)
   double *v = ARENA_ARRAY (arena, system->columns + 1, double);
   r->elimination = elimination_make (arena, &r->a, core);
   system->reduction = r;
-  find_null (arena, system);
+  system->rank = elimination_rank (r->elimination);
+  system->freedom = r->a.columns - system->rank;
   find_left (arena, system, r);
   for (size_t i = 0; i < facts; i++) {
     right[i] = system->rows.right[system->structure + i]

@@ -7,10 +7,13 @@
 
 struct arena;
 
-/* Fills in what the rows of SYSTEM come to.  A surplus is one of facts: what balances say twice is
-   none.  Up to CORE columns are left to dense algebra; REDUCE_CORE is what pays.                */
+/* Fills in what the rows of SYSTEM come to, but the null space.  A surplus is one of facts: what
+   balances say twice is none.  Up to CORE columns are left to dense algebra; REDUCE_CORE is what
+   pays.                                                                                         */
 enum { REDUCE_CORE = 100 };
 void system_reduce (struct arena *, struct system *, size_t core);
+/* Adds the null space, which with little known is large.  */
+void system_open (struct arena *, struct system *);
 /* The solution for facts with the scaled RIGHT sides, by fact row, in place of the system's own;
    they must agree.                                                                              */
 void system_solve (const struct system *, const double right[], double v[]);

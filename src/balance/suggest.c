@@ -180,27 +180,27 @@ list_set (struct work *work, struct solution *solution)
   solution->suggestion_count = count;
 }
 
-/* Is this said by a fact as it stands?  */
-static bool
-is_stated (const struct network *network, const struct quantity *quantity)
+/* Marks what facts say as it stands: by stream its total, by column a fraction.  */
+static void
+find_stated (const struct network *network, bool total[], bool fraction[])
 {
-  size_t components = network->components, s = quantity->stream;
+  size_t components = network->components;
   for (size_t f = 0; f < network->facts; f++) {
     const struct fact *fact = &network->fact[f];
-    const struct term *first = fact->left.count > 0 ? &fact->left.terms[0] : NULL;
-    bool one = fact->kind == FACT_RATIO && fact->left.count == 1 && fact->right.count > 0
-               && fact->right.terms[0].column / components == s;
-    if (quantity->kind == QUANTITY_FRACTION
-        && ((fact->kind == FACT_COMPOSITION && fact->stream == s)
-            || (one && first->column == s * components + quantity->component))) {
-      return true;
-    }
-    if (quantity->kind == QUANTITY_TOTAL && fact->kind == FACT_FORM && first
-        && fact->left.count > components / 2 && first->column / components == s) {
-      return true;
+    size_t column = fact->left.count > 0 ? fact->left.terms[0].column : NOWHERE;
+    size_t stream = column == NOWHERE ? fact->stream : column / components;
+    if (fact->kind == FACT_COMPOSITION) {
+      for (size_t c = 0; c < components; c++) {
+        fraction[fact->stream * components + c] = true;
+      }
+    } else if (stream < network->streams && fact->kind == FACT_RATIO && fact->left.count == 1
+               && fact->right.count > 0 && fact->right.terms[0].column / components == stream) {
+      fraction[column] = true;
+    } else if (stream < network->streams && fact->kind == FACT_FORM
+               && 2 * fact->left.count > components) {
+      total[stream] = true;
     }
   }
-  return false;
 }
 
 static void
@@ -211,17 +211,17 @@ find_useless (struct work *work, struct solution *solution)
   struct quantity *useless = ARENA_ARRAY (work->keep,
                                           network->streams * (components + 1) + 1,
                                           struct quantity);
+  bool *total = ARENA_ARRAY (work->arena, network->streams + 1, bool);
+  bool *fraction = ARENA_ARRAY (work->arena, network->streams * components + 1, bool);
+  find_stated (network, total, fraction);
   for (size_t s = 0; s < network->streams; s++) {
-    struct quantity total = { QUANTITY_TOTAL, s, 0 };
-    if (solution->fixed_total[s] && !is_stated (network, &total)) {
-      useless[count++] = total;
+    if (solution->fixed_total[s] && !total[s]) {
+      useless[count++] = (struct quantity) { QUANTITY_TOTAL, s, 0 };
     }
-    for (size_t c = 0; c < components && components > 1; c++) {
-      struct quantity fraction = { QUANTITY_FRACTION, s, c };
-      if (solution->fixed_fraction[s * components + c]
-          && !work->core->system->absence.absent[s * components + c]
-          && !is_stated (network, &fraction)) {
-        useless[count++] = fraction;
+    for (size_t j = s * components; j < (s + 1) * components && components > 1; j++) {
+      if (solution->fixed_fraction[j] && !work->core->system->absence.absent[j]
+          && !fraction[j]) {
+        useless[count++] = (struct quantity) { QUANTITY_FRACTION, s, j - s * components };
       }
     }
   }

@@ -62,7 +62,8 @@ struct system {
   /* Filled in by `system_reduce` (reduce.h), with bends not yet counted.  W are the scaled unknowns
      and facts are the rows from `structure` on, scaled.                                         */
   size_t rank, freedom, surplus;
-  const double *null;            /* [column * freedom + k], orthonormal in w; absent columns 0 */
+  const double *null;            /* [column * freedom + k], orthonormal in w; absent columns 0; null
+                                    until `system_open` */
   const double *particular;      /* by column, in v: least squares where the facts clash */
   const double *left;            /* [fact row * surplus + k]: multipliers of facts which some of the
                                     structure's take to nothing, orthonormal */

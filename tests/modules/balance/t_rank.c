@@ -54,6 +54,7 @@ collinear_blend (void)
   }
   system = system_make (plant->arena, &plant->network, take_all, NULL);
   system_reduce (plant->arena, system, REDUCE_CORE);
+  system_open (plant->arena, system);
   SAME_INT (system->present, 12);
   SAME_INT (system->rows.count, 12);
   SAME_INT (system->rank, 11);
@@ -79,6 +80,7 @@ narrows_by_bends (void)
   plant_composition (plant, 'F', x);
   system = system_make (plant->arena, &plant->network, take_all, NULL);
   system_reduce (plant->arena, system, REDUCE_CORE);
+  system_open (plant->arena, system);
   SAME_INT (system->freedom, 3);
   system_narrow (plant->arena, system, v, &freedom);
   SAME_INT (freedom, 1);
