@@ -143,7 +143,8 @@ session_run (struct session *s, const struct statement *statement, struct result
   if (!only_looks (statement->kind)) {
     kept_settle (s);
   }
-  return statement->kind == STATEMENT_ASK ? ask (s, statement, result, fault)
+  bool asks = statement->kind == STATEMENT_ASK || statement->kind == STATEMENT_MONTECARLO;
+  return asks ? ask (s, statement, result, fault)
                                           : command_run (s, statement, result, fault);
 }
 

@@ -164,6 +164,7 @@ struct statement {
   /* check, known, figure: the stated side, a NODE_QUANTITY or NODE_AT over one (of known a sum);
      value is the computed side.  `check NAME` has a name and no value.  */
   const struct node *claim;
+  size_t trials; unsigned long seed;             /* montecarlo, an ASK; 0: an answer by itself */
   const struct aim *aims; enum optimum optimum; const struct node *least;
   /* boundaries */
   const struct node *inlets, *outlets;

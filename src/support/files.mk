@@ -9,6 +9,8 @@ noinst_LIBRARIES += %D%/libsupport.a
   %D%/decimal.c \
   %D%/decimal.h \
   %D%/distance.c \
+  %D%/draw.c \
+  %D%/draw.h \
   %D%/fault.c \
   %D%/fault.h \
   %D%/map.c \

@@ -82,6 +82,7 @@ command_run (struct session *session, const struct statement *s, struct result *
   case STATEMENT_EMPTY:
     return true;
   case STATEMENT_ASK:
+  case STATEMENT_MONTECARLO:
   case STATEMENT_BALANCE:
   case STATEMENT_SOLVE:
   case STATEMENT_NOTE:

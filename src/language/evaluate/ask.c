@@ -4,6 +4,7 @@
 #include <math.h>
 #include <string.h>
 #include "gas/composition.h"
+#include "language/evaluate/montecarlo.h"
 #include "language/evaluate/uncertainty.h"
 #include "language/evaluate/wording.h"
 #include "language/kept.h"
@@ -218,7 +219,7 @@ add_uncertainties (const struct evaluation *ev, const struct statement *s,
     a->coverage = ev->settings->coverage;
     a->uncertainty = budgets[i] ? budgets[i]->uncertainty : UNSTATED;
   }
-  return true;
+  return s->trials == 0 || montecarlo_answers (ev, s, figures, budgets);
 }
 
 static void

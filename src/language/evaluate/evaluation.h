@@ -22,6 +22,7 @@ struct session; struct worked; struct workings;
 struct source {
   const void *what;                         /* struct spread; a figure of a table; an equation */
   double u;                                 /* standard uncertainty, in UNIT */
+  bool limits;                              /* rectangular between limits, not normal */
   const char *unit;
   const char *text;                         /* "CH4 58.2 ± 0.3 mol%" */
   const char *of;                           /* the name it is part of; null: the question */

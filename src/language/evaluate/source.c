@@ -93,7 +93,8 @@ typed_source (struct evaluation *ev, const struct node *node, double value, cons
                             : !ev->part ? NULL : ev->part->unit ? ev->part->unit : ev->basis;
   bool foreign = spread->unit && !spread->relative;
   evaluation_source (ev, &(struct source) {
-      .what = spread, .of = of, .text = typed_text (ev, node, unit),
+      .what = spread, .of = of, .limits = spread->kind == SPREAD_LIMITS,
+      .text = typed_text (ev, node, unit),
       .u = foreign ? spread->value * one_of (spread) : standard_uncertainty (node, value),
       .unit = difference_unit (ev->arena, foreign ? spread->unit : unit) });
 }

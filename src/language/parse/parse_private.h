@@ -164,6 +164,8 @@ bool unit_is_pressure (const struct unit *);
 bool unit_is_temperature (const struct unit *);
 
 enum where { IN_SUM, IN_LIST, IN_STATE };
+/* NUMBER, its value and as typed; what stands behind is not looked at.  */
+bool parse_bare_number (struct parser *, double *number, const char **figure);
 /* [ "-" ] NUMBER [ UNIT ] [ spread ], with words behind in a sum.  */
 struct node *parse_quantity (struct parser *, enum where);
 /* { "dry" | "wet" | "real" | "ideal" | "gross" | "net" }  */

@@ -11,14 +11,11 @@ at_number (const struct parser *p)
   return p->token.kind == TOKEN_MINUS && token_behind (p).kind == TOKEN_NUMBER;
 }
 
-/* NUMBER  */
-static bool
-parse_number (struct parser *p, double *value, const char **figure)
+bool
+parse_bare_number (struct parser *p, double *value, const char **figure)
 {
-  enum { GROUP = 3 };             /* digits that a thousands mark parts off */
   const struct token *t = &p->token;
   const char *text = p->scan.text + t->start;
-  size_t start = t->start, end = t->end;
   bool too_large = false;
   if (t->kind != TOKEN_NUMBER)
     return fail_here (p, MESSAGE_NUMBER_EXPECTED, "a figure is a number with its unit", NULL);
@@ -26,6 +23,18 @@ parse_number (struct parser *p, double *value, const char **figure)
     return fail (p, too_large ? MESSAGE_NUMBER_RANGE : MESSAGE_NUMBER_FORM, t->at, NULL, NULL);
   *figure = arena_copy (p->arena, text, t->end - t->start);
   token_take (p);
+  return true;
+}
+
+/* NUMBER, with no other behind it  */
+static bool
+parse_number (struct parser *p, double *value, const char **figure)
+{
+  enum { GROUP = 3 };             /* digits that a thousands mark parts off */
+  const struct token *t = &p->token;
+  size_t start = t->start, end = t->end;
+  if (!parse_bare_number (p, value, figure))
+    return false;
   if (p->token.kind != TOKEN_NUMBER)
     return true;
   fail (p, MESSAGE_NUMBER_BLANK, p->token.at, NULL, NULL);

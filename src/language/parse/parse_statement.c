@@ -1,6 +1,7 @@
 #include "config.h"
 #include "language/parse/parse_private.h"
 
+#include <math.h>
 #include "gas/species.h"
 
 /* "stream" NAME "=" sum  */
@@ -259,6 +260,45 @@ parse_question (struct parser *p, struct statement *statement)
   return at_end (p) || fail_behind_question (p, statement);
 }
 
+/* A whole number from LEAST to MOST.  */
+static bool
+parse_whole (struct parser *p, double least, double most, double *number, const char *way_on)
+{
+  struct place at = p->token.at;
+  const char *figure;
+  if (p->token.kind != TOKEN_NUMBER)
+    return fail_unexpected (p, way_on);
+  if (!parse_bare_number (p, number, &figure))
+    return false;
+  if (*number >= least && *number <= most && *number - floor (*number) <= 0)
+    return true;
+  return fail (p, MESSAGE_RANGE, at,
+               arena_format (p->arena, "a whole number from %.0f to %.0f is needed", least, most),
+               way_on);
+}
+
+/* NUMBER [ "seed" NUMBER ] question  */
+static bool
+parse_montecarlo (struct parser *p, struct statement *statement)
+{
+  static const char FORM[] = "montecarlo 100000 wobbe of raw; montecarlo 100000 seed 7 ...";
+  enum { FEWEST = 1000, MOST = 10000000 };
+  const double MOST_SEED = 4294967295.0;
+  double trials, seed = 1;
+  if (!parse_whole (p, FEWEST, MOST, &trials, FORM))
+    return false;
+  if (accept_word (p, "seed") && !parse_whole (p, 0, MOST_SEED, &seed, FORM))
+    return false;
+  if (at_end (p))
+    return fail_unfinished (p, FORM);
+  if (!parse_question (p, statement))
+    return false;
+  statement->kind = STATEMENT_MONTECARLO;
+  statement->trials = (size_t) trials;
+  statement->seed = (unsigned long) seed;
+  return true;
+}
+
 /* The statement's word is taken.  */
 static bool
 parse_opened (struct parser *p, struct statement *statement)
@@ -274,6 +314,7 @@ parse_opened (struct parser *p, struct statement *statement)
   case STATEMENT_SOLVE: return parse_only_name (p, statement, true, "solve, or solve NAME");
   case STATEMENT_SHEET: return parse_sheet (p, statement);
   case STATEMENT_CHECK: return parse_check (p, statement);
+  case STATEMENT_MONTECARLO: return parse_montecarlo (p, statement);
   case STATEMENT_TRIM: return parse_trim (p, statement);
   case STATEMENT_TREND: return parse_trend (p, statement);
   case STATEMENT_SHOW: return parse_show (p, statement);

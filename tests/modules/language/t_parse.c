@@ -258,6 +258,31 @@ figures_carry_what_stands_behind_them (void)
 }
 
 static void
+trials (void)
+{
+  struct bench b;
+  bench_open (&b);
+  const struct statement *s = first_of (&b, "montecarlo 1e5 seed 7 850 Nm3/h of raw in kg/h");
+  NEED (s != NULL);
+  SAME_INT (s->kind, STATEMENT_MONTECARLO);
+  SAME_INT (s->trials, 100000);
+  SAME_INT (s->seed, 7);
+  NEED (s->value != NULL && s->targets != NULL);
+  SAME_INT (s->value->at.first, 23);
+  s = first_of (&b, "montecarlo 20_000 wobbe of raw");
+  NEED (s != NULL);
+  SAME_INT (s->trials, 20000);
+  SAME_INT (s->seed, 1);
+  fails (&b, "montecarlo wobbe of raw", "word-unexpected", 1, 12);
+  fails (&b, "montecarlo 100 wobbe of raw", "range", 1, 12);
+  fails (&b, "montecarlo 1000.5 wobbe of raw", "range", 1, 12);
+  fails (&b, "montecarlo 100 000 wobbe of raw", "range", 1, 12);
+  fails (&b, "montecarlo 1000 seed x", "word-unexpected", 1, 22);
+  fails (&b, "montecarlo 1000", "unfinished", 1, 16);
+  bench_close (&b);
+}
+
+static void
 by_a_standard (void)
 {
   struct bench b;
@@ -487,6 +512,7 @@ mangled_lines_never_break_it (void)
 }
 
 static const struct test_case cases[] = {
+  { "trials", trials },
   { "a property by a standard", by_a_standard },
   { "places count in physical lines", places_count_in_physical_lines },
   { "places of nodes cover their words", places_of_nodes_cover_their_words },

@@ -16,6 +16,10 @@ suites += %D%/t_csv
 %C%_t_csv_SOURCES = %D%/t_csv.c
 %C%_t_csv_LDADD = $(with_support)
 
+suites += %D%/t_draw
+%C%_t_draw_SOURCES = %D%/t_draw.c
+%C%_t_draw_LDADD = $(with_support)
+
 suites += %D%/t_fault
 %C%_t_fault_SOURCES = %D%/t_fault.c
 %C%_t_fault_LDADD = $(with_support)
