@@ -350,9 +350,9 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
     return fault_set_at (fault, MESSAGE_NOT_FINITE, d->statement->value->at, NULL, NULL);
   }
   if (d->kind == NAME_GAS && value.gas->closed) {
-    caution_gas (&notes, value.gas->closed, d->name);
+    caution_gas (session, &notes, value.gas->closed, d->name);
   } else if (d->kind == NAME_STREAM && tree_new_gas (d->statement->value)) {
-    caution_gas (&notes, value.stream.gas, d->name);
+    caution_gas (session, &notes, value.stream.gas, d->name);
   }
   if (d->kind == NAME_REFERENCE) {
     d->state = state;
@@ -546,11 +546,14 @@ definition_tell (struct session *session, struct definition *d, bool all, struct
 }
 
 void
-caution_gas (struct result *result, const struct composition *gas, const char *name)
+caution_gas (const struct session *session, struct result *result, const struct composition *gas,
+             const char *name)
 {
   struct hazard found[HAZARD_MOST];
   struct arena *arena = result->arena;
-  size_t n = hazard_find (gas, found);
+  struct flammable_limits *stated;
+  size_t set = limits_set (&session->settings, NULL, arena, &stated);
+  size_t n = hazard_find (gas, stated, set, found);
   for (size_t i = 0; i < n; i++) {
     const struct hazard *h = &found[i];
     const char *ratio = rough_text (arena, h->ratio);

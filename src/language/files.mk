@@ -58,6 +58,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/evaluate/flow.c \
   %D%/evaluate/flow.h \
   %D%/evaluate/heat.c \
+  %D%/evaluate/limits.c \
   %D%/evaluate/montecarlo.c \
   %D%/evaluate/montecarlo.h \
   %D%/evaluate/question.c \

@@ -127,7 +127,7 @@ session_spoil_block (struct session *s)
 static bool
 only_looks (enum statement_kind kind)
 {
-  return kind == STATEMENT_ASK || kind == STATEMENT_WORKINGS
+  return kind == STATEMENT_ASK || kind == STATEMENT_MONTECARLO || kind == STATEMENT_WORKINGS
          || kind == STATEMENT_NOTE
          || kind == STATEMENT_HELP || kind == STATEMENT_LIST || kind == STATEMENT_SHOW
          || kind == STATEMENT_SAVE || kind == STATEMENT_EMPTY || kind == STATEMENT_QUIT;
@@ -145,7 +145,7 @@ session_run (struct session *s, const struct statement *statement, struct result
   }
   bool asks = statement->kind == STATEMENT_ASK || statement->kind == STATEMENT_MONTECARLO;
   return asks ? ask (s, statement, result, fault)
-                                          : command_run (s, statement, result, fault);
+              : command_run (s, statement, result, fault);
 }
 
 int

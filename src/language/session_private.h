@@ -116,7 +116,8 @@ void definition_tell (struct session *, struct definition *, bool all, struct re
 /* Its own cautions alone.  */
 void definition_warn (const struct definition *, struct result *);
 /* Cautions that follow from what is in a gas.  NAME: what it is called.  */
-void caution_gas (struct result *, const struct composition *, const char *name);
+void caution_gas (const struct session *, struct result *, const struct composition *,
+                  const char *name);
 
 /* ---- Files (from_file.c) ---- */
 

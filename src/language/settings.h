@@ -11,6 +11,8 @@
 #include "language/tree.h"
 #include "units/unit.h"
 
+struct species;
+
 enum below_detection { BELOW_ZERO, BELOW_HALF, BELOW_LIMIT };
 
 /* What a reference family stands for: conditions, and how they are written.  */
@@ -32,6 +34,14 @@ struct trial {
   double T, p, humidity, Z;                /* of every state that says one: K, Pa, 0 to 1, 1 */
 };
 
+/* A lower flammable limit the user states in place of the table's; in the order they were set.  */
+struct stated_limit {
+  const struct species *species;
+  const struct node *figure;               /* a share, maybe uncertain */
+  const char *source;                      /* the statement that set it */
+  const struct stated_limit *next;
+};
+
 struct settings {
   /* That of FAMILY_NONE is for volumes whose state nobody said; as shipped there is none.  */
   struct family_setting family[FAMILY_COUNT];
@@ -47,6 +57,7 @@ struct settings {
   enum below_detection below;
   double combustion;                       /* K */
   bool calorific_1995;
+  const struct stated_limit *limits;       /* that replace those of the table; or null */
   bool parts_independent;                  /* a list with one part moved is not closed again */
   bool constants_uncertain;                /* figures of tables and equations are sources too */
   double coverage;                         /* uncertainties are shown times this */

@@ -51,6 +51,13 @@ limits_of (const struct species *species, const struct flammable_limits stated[]
   return found;
 }
 
+double
+flammability_lower (const struct species *species, const struct flammable_limits stated[],
+                    size_t n)
+{
+  return limits_of (species, stated, n).lower;
+}
+
 /* A gas that no table calls harmless may burn.  */
 static enum role
 role_of (const struct species *species, double lower)

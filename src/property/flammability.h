@@ -51,4 +51,8 @@ struct flammability {
 bool flammability_of (const struct composition *, const struct flammable_limits stated[], size_t n,
                       struct flammability *, struct workings *, struct fault *) MUST_CHECK;
 
+/* The lower limit of one component: as stated, else the table's; NAN: none.  */
+double flammability_lower (const struct species *, const struct flammable_limits stated[],
+                           size_t n);
+
 #endif

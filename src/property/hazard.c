@@ -5,6 +5,7 @@
 #include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "property/flammability.h"
 #include "support/sum.h"
 
 /* OSHA, 29 CFR 1910.146(b), hazardous atmosphere: oxygen below 19.5 or above 23.5 per cent.  */
@@ -73,7 +74,8 @@ find_oxygen (const struct composition *c, struct hazard *found)
 /* Le Chatelier, Annales des Mines (8) 19 (1891) 388: a mixture is at its lower limit in air when
    sum x_i/L_i = 1.  The limit of the fuels together is sum x_i/(sum x_i/L_i).                   */
 static size_t
-find_flammable (const struct composition *c, struct hazard *found)
+find_flammable (const struct composition *c, const struct flammable_limits stated[], size_t n,
+                struct hazard *found)
 {
   struct sum ratio = { 0, 0 }, fuel = { 0, 0 };
   const struct species *largest = NULL;
@@ -81,7 +83,7 @@ find_flammable (const struct composition *c, struct hazard *found)
   if (fraction_of_key (c, "O2") < oxygen_to_burn)
     return 0;
   for (size_t i = 0; i < c->count; i++) {
-    double limit = c->species[i]->lower_flammable;
+    double limit = flammability_lower (c->species[i], stated, n);
     if (!(limit > 0))                    /* NAN: not flammable */
       continue;
     double part = c->fraction[i] / limit;
@@ -131,10 +133,11 @@ find_toxic (const struct composition *c, struct hazard found[], size_t room)
 }
 
 size_t
-hazard_find (const struct composition *c, struct hazard found[HAZARD_MOST])
+hazard_find (const struct composition *c, const struct flammable_limits stated[], size_t n,
+             struct hazard found[HAZARD_MOST])
 {
   struct hazard other[2];
-  size_t others = find_flammable (c, other);
+  size_t others = find_flammable (c, stated, n, other);
   others += find_oxygen (c, other + others);
   size_t count = find_toxic (c, found, HAZARD_MOST - others);
   for (size_t i = 0; i < others; i++)

@@ -3,6 +3,7 @@
 #define PROPERTY_HAZARD_H
 
 #include <stddef.h>
+#include "property/flammability.h"
 
 struct composition; struct species;
 
@@ -20,7 +21,9 @@ struct hazard { enum hazard_kind kind; const struct species *species; double rat
 
 enum { HAZARD_MOST = 8 };
 /* Fills FOUND (kinds in the order above, worst first within a kind; of too many toxic ones the
-   least are left out) and returns how many, at most HAZARD_MOST.                                */
-size_t hazard_find (const struct composition *, struct hazard found[HAZARD_MOST]);
+   least are left out) and returns how many, at most HAZARD_MOST.  N STATED limits replace those of
+   the table.                                                                                    */
+size_t hazard_find (const struct composition *, const struct flammable_limits stated[], size_t n,
+                    struct hazard found[HAZARD_MOST]);
 
 #endif

@@ -46,7 +46,8 @@ def check(tap, name, tables):
                              for table in tables)
     for row in expected:
         answer = found.get(row["label"], ({"value": None, "unit": ""}, {}))[0]
-        wrong = session.off(answer["value"], float(row["value"]), float(row["tol"]), row["kind"])
+        member, kind = ("uncertainty", "rel") if row["kind"] == "u" else ("value", row["kind"])
+        wrong = session.off(answer.get(member), float(row["value"]), float(row["tol"]), kind)
         if not wrong and answer["unit"] != row["unit"]:
             wrong = "in %s, not in %s" % (answer["unit"], row["unit"])
         tap.tell(wrong, "%s: %s" % (name, row["quantity"]))

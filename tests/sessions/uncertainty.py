@@ -100,7 +100,7 @@ def settings(tap):
     density = "density of CH4 at 20 degC, 50 bar(a)\n"
     with tempfile.TemporaryDirectory() as folder:
         name = os.path.join(folder, "kept.gw")
-        sets = "set coverage 2\nset constants uncertain\nset parts independent\n"
+        sets = "set lower flammable limit of H2 4.1 vol%\nset coverage 2\nset constants uncertain\nset parts independent\n"
         kept = session.answers(sets + 'save "%s"\n' % name + question + density)
         again = session.answers('open "%s"\n' % name + question + density + "set\n"
                                 + 'save "%s2"\n' % name)

@@ -123,6 +123,18 @@ list_properties (struct result *result)
 
 /* ---- Settings ---- */
 
+/* "CH4 5 vol%, H2 4 vol%"  */
+static const char *
+limits_text (struct arena *arena, const struct stated_limit *limit)
+{
+  const char *text = limit ? "" : "as published";
+  for (; limit; limit = limit->next) {
+    text = arena_format (arena, "%s%s %s %s%s", text, limit->species->key, limit->figure->figure,
+                         limit->figure->unit_text, limit->next ? ", " : "");
+  }
+  return text;
+}
+
 static const char *
 setting_value (struct arena *arena, const struct settings *s, enum setting setting)
 {
@@ -147,6 +159,8 @@ setting_value (struct arena *arena, const struct settings *s, enum setting setti
     return temperature_text (arena, s->combustion, false);
   case SETTING_CALORIFIC_VALUES:
     return s->calorific_1995 ? "ISO 6976:1995" : "ISO 6976:2016";
+  case SETTING_LOWER_FLAMMABLE_LIMIT:
+    return limits_text (arena, s->limits);
   case SETTING_PARTS:
     return s->parts_independent ? "independent" : "closed";
   case SETTING_CONSTANTS:

@@ -155,12 +155,13 @@ tell_cautions (struct table *t)
 {
   enum { WORST_MOST = 32 };
   struct { struct hazard hazard; const struct row *row; } worst[WORST_MOST];
-  size_t n = 0;
+  struct flammable_limits *stated;
+  size_t n = 0, set = limits_set (&t->session->settings, NULL, t->result->arena, &stated);
   for (size_t i = 0; i < t->count; i++) {
     struct hazard found[HAZARD_MOST];
     const struct row *row = &t->rows[i];
     const struct composition gas = { row->count, row->species, row->fraction, 0 };
-    size_t hazards = row->open ? 0 : hazard_find (&gas, found);
+    size_t hazards = row->open ? 0 : hazard_find (&gas, stated, set, found);
     for (size_t k = 0; k < hazards; k++) {
       size_t at = 0;
       while (at < n && !(worst[at].hazard.kind == found[k].kind
@@ -179,7 +180,7 @@ tell_cautions (struct table *t)
   for (size_t at = 0; at < n; at++) {
     const struct row *row = worst[at].row;
     const struct composition gas = { row->count, row->species, row->fraction, 0 };
-    caution_gas (t->result, &gas, row->name);
+    caution_gas (t->session, t->result, &gas, row->name);
   }
 }
 

@@ -49,9 +49,12 @@ session_write (const struct session *s, struct text *out)
   struct arena *arena = arena_create ();
   bool *written = ARENA_ARRAY (arena, s->count, bool);
   for (int i = 0; i < SETTING_COUNT; i++)
-    if (s->settings.source[i]) {
+    if (s->settings.source[i] && i != SETTING_LOWER_FLAMMABLE_LIMIT) {
       add_statement (out, s->settings.source[i]);
     }
+  for (const struct stated_limit *limit = s->settings.limits; limit; limit = limit->next) {
+    add_statement (out, limit->source);
+  }
   /* A family may be set at reference conditions that have a name: those come first.  */
   for (size_t i = 0; i < s->count; i++)
     if (s->order[i]->kind == NAME_REFERENCE && !written[i]) {

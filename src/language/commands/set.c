@@ -3,6 +3,7 @@
 
 #include <math.h>
 #include <string.h>
+#include "gas/species.h"
 #include "language/evaluate/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
@@ -35,6 +36,7 @@ touch_of (enum setting setting)
   case SETTING_BELOW_DETECTION: return TOUCH_BELOW;
   case SETTING_COMBUSTION:
   case SETTING_CALORIFIC_VALUES: return TOUCH_COMBUSTION;
+  case SETTING_LOWER_FLAMMABLE_LIMIT: return TOUCH_LIMITS;
   case SETTING_PARTS:
   case SETTING_CONSTANTS:
   case SETTING_COVERAGE:
@@ -42,6 +44,22 @@ touch_of (enum setting setting)
   case SETTING_COUNT: break;
   }
   return 0;
+}
+
+/* ISO 6976:1995 has no figures at 60 degF.  */
+static bool
+editions_fit (const struct statement *s, const struct settings *new, struct fault *fault)
+{
+  static const double SAME = 0.01, AT_60_DEGF = 519.67 / 1.8;
+  bool clash = new->calorific_1995 && fabs (new->combustion - AT_60_DEGF) <= SAME;
+  if (!clash) {
+    return true;
+  }
+  bool edition = s->setting == SETTING_CALORIFIC_VALUES;
+  return fault_set_at (fault, MESSAGE_SETTING_VALUE, s->setting_at, names[s->setting],
+                       edition ? "ISO 6976:1995 has 0, 15, 20 and 25 degC, and combustion is set "
+                                 "at 60 degF: set combustion at 15 degC first"
+                               : "ISO 6976:1995, which is set, has 0, 15, 20 and 25 degC");
 }
 
 /* The statement read again into memory that lasts, so that its trees and texts last.  */
@@ -94,6 +112,7 @@ set_words (const struct statement *s, struct settings *new, struct fault *fault)
   case SETTING_OXYGEN_IN_AIR:
   case SETTING_TOTAL_TOLERANCE:
   case SETTING_COMBUSTION:
+  case SETTING_LOWER_FLAMMABLE_LIMIT:
   case SETTING_COVERAGE:
   case SETTING_DIGITS:
   case SETTING_COUNT:
@@ -182,6 +201,7 @@ set_figure (struct session *session, const struct statement *s, struct settings 
   case SETTING_REFERENCE_VOLUMES:
   case SETTING_BELOW_DETECTION:
   case SETTING_CALORIFIC_VALUES:
+  case SETTING_LOWER_FLAMMABLE_LIMIT:
   case SETTING_PARTS:
   case SETTING_CONSTANTS:
   case SETTING_COUNT:
@@ -222,6 +242,60 @@ set_family (struct session *session, const struct statement *s, struct settings 
   return true;
 }
 
+/* The list without what was stated of the same component, and the new limit at its end.  */
+static const struct stated_limit *
+with_limit (struct arena *arena, const struct stated_limit *old, const struct stated_limit *new)
+{
+  const struct stated_limit *first = NULL, **last = &first;
+  for (; old; old = old->next)
+    if (old->species != new->species) {
+      struct stated_limit *kept = ARENA_NEW (arena, struct stated_limit);
+      *kept = *old;
+      *last = kept;
+      last = &kept->next;
+    }
+  struct stated_limit *added = ARENA_NEW (arena, struct stated_limit);
+  *added = *new;
+  added->next = NULL;
+  *last = added;
+  return first;
+}
+
+/* `set lower flammable limit of CH4 5.0 vol%`.  */
+static bool
+set_limit (struct session *session, const struct statement *s, struct settings *new,
+           struct fault *fault)
+{
+  struct evaluation ev;
+  struct species_set set;
+  evaluation_init (&ev, session, NULL, fault);
+  if (!species_named (&ev, s->names, &set)) {
+    return false;
+  }
+  double limit = unit_to_si (s->value->unit, s->value->number);
+  if (set.count != 1) {
+    return fault_set_at (fault, MESSAGE_KIND_WRONG, s->names->at, "one component is needed here",
+                         NULL);
+  }
+  if (!(limit > 0 && limit < 1)) {
+    return out_of_range (s, fault, "a limit lies between 0 and 100 vol%");
+  }
+  new->is_set[s->setting] = true;
+  new->limits = with_limit (session->arena, new->limits,
+                            &(struct stated_limit) { set.at[0], s->value, s->source, NULL });
+  return true;
+}
+
+/* What S sets, into NEW.  */
+static bool
+set_one (struct session *session, const struct statement *s, struct settings *new,
+         struct result *result, struct fault *fault)
+{
+  return s->setting_unit ? set_family (session, s, new, result, fault)
+         : s->names ? set_limit (session, s, new, fault)
+         : s->setting_words ? set_words (s, new, fault) : set_figure (session, s, new, fault);
+}
+
 static void
 say_what_moves (struct session *session, unsigned bits, struct result *result)
 {
@@ -242,16 +316,14 @@ command_set (struct session *session, const struct statement *typed, struct resu
   }
   struct settings before = session->settings, new = before;
   /* Faults point into the line as typed; what is kept is read again.  */
-  bool done = typed->setting_unit ? set_family (session, typed, &new, result, fault)
-              : typed->setting_words ? set_words (typed, &new, fault)
-                                     : set_figure (session, typed, &new, fault);
+  bool done = set_one (session, typed, &new, result, fault);
+  done = done && editions_fit (typed, &new, fault);
   const struct statement *s = done ? keep_statement (session, typed, fault) : NULL;
   if (!s) {
     return false;
   }
   new = before;
-  done = s->setting_unit ? set_family (session, s, &new, result, fault)
-         : s->setting_words ? set_words (s, &new, fault) : set_figure (session, s, &new, fault);
+  done = set_one (session, s, &new, result, fault);
   if (!done) {
     return false;
   }

@@ -235,7 +235,7 @@ caution_value (struct evaluation *ev, const struct statement *s, const struct va
   /* A sum of components makes no gas.  */
   bool sum_of_parts = value->kind == VALUE_PART && made == s->value;
   if (made && gas && !sum_of_parts) {
-    caution_gas (ev->result, gas, node_text (ev->arena, s, made));
+    caution_gas (ev->session, ev->result, gas, node_text (ev->arena, s, made));
   }
 }
 

@@ -404,6 +404,71 @@ leave_unclosed (struct evaluation *ev, const struct node *list, struct stated_pa
   return before != NULL;
 }
 
+/* Where in a list the part that takes the rest stands; N: nowhere.  */
+static size_t
+rest_of (const struct node *list)
+{
+  size_t i = 0;
+  const struct node *part = list->items;
+  while (part && !part->rest) {
+    part = part->next;
+    i++;
+  }
+  return i;
+}
+
+/* By what share of its own the part at WHICH is uncertain; N parts: any of them, whichever moves
+   most.  By first order, as the answer's uncertainty is found.                                  */
+static double
+part_uncertainty (struct evaluation *ev, const struct node *list, size_t n,
+                  const struct analysis *analysis, size_t which)
+{
+  struct stated_part *parts = ARENA_ARRAY (ev->arena, n, struct stated_part);
+  double squares = 0;
+  for (size_t i = 0; i < ev->source_count; i++) {
+    struct evaluation again;
+    struct fault fault;
+    struct shift shift = { ev->sources[i].what, 1 };
+    size_t at;
+    fault_init (&fault, ev->arena);
+    evaluation_again (&again, ev, &fault);
+    again.settings = ev->settings;
+    again.shifts = &shift;
+    again.shift_count = 1;
+    const struct analysis *moved = analysis_of (&again, list, parts, n, &at);
+    double largest = 0;
+    for (size_t k = 0; moved && k < n && k < moved->count; k++)
+      if (analysis->parts[k].amount > 0 && (k == which || which == n)) {
+        largest = fmax (largest, fabs (moved->parts[k].amount / analysis->parts[k].amount - 1));
+      }
+    squares += largest * largest;
+  }
+  return sqrt (squares);
+}
+
+/* What takes the rest carries every other error: from this share of it on, that is said.  Own
+   judgement, no source.                                                                         */
+static const double WORTH_A_NOTE = 0.01;
+
+static void
+tell_closure (struct evaluation *ev, const struct node *list, size_t n,
+              const struct analysis *analysis, const char *name)
+{
+  size_t rest = rest_of (list);
+  bool closes = analysis->whole != WHOLE_NONE && analysis->count == n && n > 1
+                && (rest < n || !ev->settings->parts_independent);
+  if (!ev->describe || !ev->result || ev->source_count == 0 || !closes) {
+    return;
+  }
+  double u = part_uncertainty (ev, list, n, analysis, rest);
+  if (rest < n && u >= WORTH_A_NOTE) {
+    note (ev, MESSAGE_NOTE_REST_UNCERTAIN, name, part_at (list, rest)->text,
+          arena_format (ev->arena, "%s %%", rough_text (ev->arena, 100 * u)));
+  } else if (u > 0) {
+    note (ev, MESSAGE_NOTE_CLOSURE, name, NULL, NULL);
+  }
+}
+
 bool
 evaluate_list (struct evaluation *ev, const struct node *list, struct value *out)
 {
@@ -426,6 +491,7 @@ evaluate_list (struct evaluation *ev, const struct node *list, struct value *out
     return false;
   }
   out->gas = gas;
+  tell_closure (ev, list, n, analysis, named.name ? named.name : "the list");
   if (analysis->whole == WHOLE_MASS) {
     note (ev, MESSAGE_NOTE_BY_MASS, named.name ? named.name : "the list", NULL, NULL);
   }

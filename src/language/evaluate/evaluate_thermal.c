@@ -236,11 +236,24 @@ does_not_burn (struct evaluation *ev, const struct property_question *q, enum fl
                          : "it holds too little fuel to burn with air in any proportion", NULL);
 }
 
+static bool
+holds_stated (const struct composition *gas, const struct flammable_limits stated[], size_t n)
+{
+  bool holds = false;
+  for (size_t i = 0; i < n; i++) {
+    holds = holds || composition_fraction (gas, stated[i].species) > 0;
+  }
+  return holds;
+}
+
 bool
 property_flammable (struct evaluation *ev, const struct property_question *q, struct value *out)
 {
   struct flammability f;
-  if (!flammability_of (q->gas, NULL, 0, &f, ev->workings, ev->fault)) {
+  struct flammable_limits *stated;
+  size_t n = limits_set (ev->settings, ev, ev->arena, &stated);
+  evaluation_touch (ev, TOUCH_LIMITS);
+  if (!flammability_of (q->gas, stated, n, &f, ev->workings, ev->fault)) {
     fault_place (ev->fault, q->node->b->at);
     return false;
   }
@@ -259,7 +272,9 @@ property_flammable (struct evaluation *ev, const struct property_question *q, st
     out->kind = VALUE_LIMITS;
     out->upper = f.upper;
   }
-  out->basis = "of the gas in air, near 20 degC and 1 atm, Le Chatelier";
+  out->basis = holds_stated (q->gas, stated, n)
+                 ? "of the gas in air, near 20 degC and 1 atm, Le Chatelier, lower limits as set"
+                 : "of the gas in air, near 20 degC and 1 atm, Le Chatelier";
   tell_flammable (ev, q, &f);
   return true;
 }

@@ -15,8 +15,8 @@
 #include "support/check.h"
 #include "support/fault.h"
 
-struct arena; struct calorific_moves; struct definition; struct eos_state; struct result;
-struct session; struct worked; struct workings;
+struct arena; struct calorific_moves; struct definition; struct eos_state;
+struct flammable_limits; struct result; struct session; struct worked; struct workings;
 
 /* An uncertain figure, told apart from others by the address of what it belongs to.  */
 struct source {
@@ -42,7 +42,8 @@ enum touch { TOUCH_SITE = 1u << 8, TOUCH_MODEL = 1u << 9, TOUCH_OXYGEN = 1u << 1
              TOUCH_BELOW = 1u << 11, TOUCH_TOLERANCE = 1u << 12, TOUCH_BARE = 1u << 13,
              TOUCH_VOLUMES = 1u << 14, TOUCH_QUANTITY = 1u << 15,
              TOUCH_VAPOUR = 1u << 16, TOUCH_COMBUSTION = 1u << 17,
-             TOUCH_TYPED = 1u << 18 /* any figure, word or state as typed */ };
+             TOUCH_TYPED = 1u << 18 /* any figure, word or state as typed */,
+             TOUCH_LIMITS = 1u << 19 };
 static inline unsigned touch_family (enum reference_family f) { return 1u << (unsigned) f; }
 
 /* What the usual alternative to an assumption is.  The last two have none that is usual: they are
@@ -216,6 +217,13 @@ double heat_air_molar_mass (struct evaluation *);
 /* Gross or net, J/mol.  */
 bool heat_per_mole (struct evaluation *, const struct composition *, bool net, double *H)
   MUST_CHECK;
+
+/* ---- Flammable limits (limits.c) ---- */
+
+/* The lower limits that are set, into an array in ARENA; how many.  EV not null: as it moves them
+   by their uncertainties, which are its sources.                                                */
+size_t limits_set (const struct settings *, struct evaluation *, struct arena *,
+                   struct flammable_limits **);
 
 /* ---- Volumes (volume.c) ---- */
 

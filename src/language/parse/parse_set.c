@@ -3,8 +3,8 @@
 
 static const char SETTINGS[] =
   "settings: below detection, calorific values, combustion, constants, coverage, digits, gas model,"
-  " oxygen in air, parts, reference volumes, site altitude, site pressure, total tolerance; or a"
-  " reference unit: set scf at T, P";
+  " lower flammable limit, oxygen in air, parts, reference volumes, site altitude, site pressure,"
+  " total tolerance; or a reference unit: set scf at T, P";
 
 /* What a setting of words may be set to; null last.  */
 static const char *const gas_models[] = { "auto", "ideal", "Peng-Robinson", "GERG-2008",
@@ -74,7 +74,7 @@ figure_fits (enum setting setting, const struct node *figure)
     return unit_is_pressure (unit) && (unit->sort == UNIT_SCALE || unit->sort == UNIT_ABSOLUTE);
   if (setting == SETTING_SITE_ALTITUDE)
     return dimension_equal (unit->dimension, DIMENSION_LENGTH);
-  if (setting == SETTING_OXYGEN_IN_AIR)
+  if (setting == SETTING_OXYGEN_IN_AIR || setting == SETTING_LOWER_FLAMMABLE_LIMIT)
     return unit->ratio == RATIO_MOLE || unit->ratio == RATIO_VOLUME;
   if (setting == SETTING_TOTAL_TOLERANCE)
     return unit->ratio == RATIO_PLAIN || unit->ratio == RATIO_MOLE;
@@ -103,6 +103,18 @@ parse_figure (struct parser *p, struct statement *statement)
   return expect_end (p, NULL);
 }
 
+/* "of" NAME figure  */
+static bool
+parse_limit (struct parser *p, struct statement *statement)
+{
+  static const char FORM[] = "set lower flammable limit of CH4 5.0 vol%";
+  if (!expect_word (p, "of", FORM))
+    return false;
+  struct node *name = parse_name (p, FORM);
+  statement->names = name;
+  return name != NULL && parse_figure (p, statement);
+}
+
 /* SETTING [ VALUE ]  */
 static bool
 parse_setting (struct parser *p, struct statement *statement)
@@ -114,6 +126,7 @@ parse_setting (struct parser *p, struct statement *statement)
   case SETTING_REFERENCE_VOLUMES: return parse_words (p, statement, volumes);
   case SETTING_BELOW_DETECTION: return parse_words (p, statement, limits);
   case SETTING_CALORIFIC_VALUES: return parse_words (p, statement, standards);
+  case SETTING_LOWER_FLAMMABLE_LIMIT: return parse_limit (p, statement);
   case SETTING_PARTS: return parse_words (p, statement, parts);
   case SETTING_CONSTANTS: return parse_words (p, statement, constants);
   case SETTING_COMBUSTION:

@@ -18,7 +18,7 @@ find (size_t n, const struct part parts[])
   arena = arena_create ();
   fault_init (&fault, arena);
   const struct composition *c = composition_make (arena, n, parts, &fault);
-  return c != NULL ? hazard_find (c, found) : (size_t) HAZARD_MOST + 1;
+  return c != NULL ? hazard_find (c, NULL, 0, found) : (size_t) HAZARD_MOST + 1;
 }
 
 static void
