@@ -58,4 +58,11 @@ tell "$(LC_ALL=C awk -F '\t' '!/^#/ && ($3 $4) ~ /\{([^1-4]|[1-4][^}])/ {
     print FILENAME ":" FNR ": " $3 " / " $4 }' tables/messages.tsv)" "places for facts are {1} to {4}"
 tell "$(LC_ALL=C awk -F '\t' '!/^#/ && $2 == "error" && $3 ~ /(syntax error|invalid)/ {
     print FILENAME ":" FNR ": " $3 }' tables/messages.tsv)" "errors are in the words of the trade"
+# Readings: what every row must have; that its change can be read, a suite tells.
+tell "$(LC_ALL=C awk -F '\t' '!/^#/ && $1 != "reading" {
+    if ($4 !~ /^(computed|stated|either|both)$/) print FILENAME ":" FNR ": side " $4
+    if ($5 !~ /^[123]$/) print FILENAME ":" FNR ": cost " $5
+    if ($3 ~ /^unit / && $2 !~ /\{2\}/) print FILENAME ":" FNR ": does not say the unit"
+    if (split($3, words, " ") < 1 || $2 == "") print FILENAME ":" FNR ": says or changes nothing"
+  }' tables/readings.tsv)" "every reading has a side, a cost and a sentence"
 finish

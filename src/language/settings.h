@@ -27,6 +27,7 @@ struct trial {
   bool vapour_atmospheric;                 /* the vapour fraction is that at 101.325 kPa */
   bool other_heat;                         /* net for gross, and the reverse */
   bool no_oxygen;                          /* no correction to a reference oxygen */
+  bool wet_oxygen;                         /* the oxygen of that correction is of the wet gas */
   bool Z_out, Z_inverse;                   /* compressibility left out; multiplied for divided */
   double ice_point;                        /* K of 0 degC */
   const char *from, *to;                   /* a word of units read as another */

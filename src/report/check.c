@@ -188,7 +188,8 @@ difference_add (struct text *out, const struct report_style *style, const struct
   plain_figure (out, style, v->limit);
   text_add (out, v->by_digits ? " by its digits" : " by its uncertainty");
   if (uncertain)
-    text_add (out, " and that of the computed figure");
+    text_add (out, v->by_digits ? " and the uncertainty of the computed figure"
+                                : " and that of the computed figure");
 }
 
 /* How many figures of a sheet agree, under what, and which of them does not.  */

@@ -317,7 +317,7 @@ rows_add (struct frame *frame, const struct result *result)
   if (result->workings != NULL)
     steps_add (frame, result->workings);
   if (result->answers == NULL && result->cards == NULL && result->help == NULL
-      && result->trend == NULL && result->workings == NULL)
+      && result->trend == NULL && result->workings == NULL && result->check == NULL)
     words_add (frame, NULL, NULL, NULL, NULL);
 }
 

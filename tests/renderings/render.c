@@ -13,6 +13,7 @@
 #include <string.h>
 
 #include "report/report.h"
+#include "result/check_verdict.h"
 #include "result/result.h"
 #include "result/trend.h"
 #include "result/workings_record.h"
@@ -163,6 +164,60 @@ add_part (struct result *result, struct card *card, const char *name, const doub
   for (size_t i = 0; i < 3; i++)
     cells[i] = (struct cell) { .value = values[i], .is_number = true };
   cells[3].text = stated;
+}
+
+/* Stated figures.  */
+
+static void
+build_check (struct result *result)
+{
+  static struct check_reading none = { "9.92 m3 at 0 degC, 101.325 kPa", 8.98078, "m3",
+                                       9.92 / 8.98078 - 1, 1, NULL };
+  static struct check_reading second = { "9.92 m3 at 20 degC, 100 kPa, 65 %RH", 9.91684, "m3",
+                                         9.92 / 9.91684 - 1, 2, NULL };
+  static struct check_reading first = { "9.92 m3 at 15 degC; compressibility was left out",
+                                        9.91923, "m3", 9.92 / 9.91923 - 1, 2, &second };
+  static const struct check_verdict verdict = {
+    .stated = "9.92 m3", .outcome = CHECK_READINGS, .value = 9.92, .computed = 9.47396,
+    .difference = 0.44604, .deviation = 0.44604 / 9.47396, .limit = 0.005, .by_digits = true,
+    .unit = "m3", .reading_count = 2, .tied = 2, .readings = &first, .ruled_out = &none };
+  result->statement = "check cylinder in m3 against 9.92 m3";
+  add_answer (result, "cylinder", 9.47396, "m3", "dry", "15 degC, 101.325 kPa, ideal-gas volume");
+  result->answers->uncertainty = 0.0123;
+  result_remark (result, MESSAGE_CAUTION_CUSTODY, NULL, NULL);
+  result->check = &verdict;
+}
+
+/* Nothing fits, and one quantity cannot be had; a temperature has no per cent.  */
+static void
+build_unexplained (struct result *result)
+{
+  static struct check_need moist = { "humidity", (double) NAN, "%RH", NULL, 0.01, 100, NULL };
+  static struct check_need warm = { "temperature", 105.661, "degC", NULL, -100, 1000, &moist };
+  static const struct check_verdict verdict = {
+    .stated = "79 degF ± 1", .outcome = CHECK_UNEXPLAINED, .value = 79, .computed = 70,
+    .difference = 9, .deviation = (double) NAN, .limit = 2, .unit = "degF", .needs = &warm };
+  result->statement = "check t against 79 degF ± 1";
+  add_answer (result, "t", 70, "degF", NULL, NULL);
+  result->check = &verdict;
+}
+
+static void
+build_sheet (struct result *result)
+{
+  static struct check_figure mass = { NULL, "2200 kg/h", 2200, 2077.86, 2200 / 2077.86 - 1,
+                                      "kg/h", false, false, NULL };
+  static struct check_figure duty = { "duty", "1000 scfm", 1000, 1000.03, 1000 / 1000.03 - 1,
+                                      "scfm", true, true, &mass };
+  static struct check_figure inlet = { "inlet \033[1m", "1057 ft3/min at 32 degC", 1057, 1056.96,
+                                       1057 / 1056.96 - 1, "ft3/min", true, false, &duty };
+  static struct check_reading altitude = { "altitude was left out", 2, "figures", (double) NAN, 1,
+                                           NULL };
+  static const struct check_verdict verdict = {
+    .stated = "offer", .outcome = CHECK_READINGS, .unit = "", .reading_count = 1, .tied = 1,
+    .readings = &altitude, .figures = &inlet, .figure_count = 3, .agreeing = 2 };
+  result->statement = "check offer";
+  result->check = &verdict;
 }
 
 static void
@@ -373,6 +428,9 @@ static const struct scene scenes[] = {
   { "hostile", "text prompt json csv", build_hostile, NULL },
   { "gas-card", "text prompt weights json csv", build_gas_card, NULL },
   { "stream-card", "text json csv", build_stream_card, NULL },
+  { "check", "text prompt weights json csv", build_check, NULL },
+  { "check-unexplained", "text prompt json csv", build_unexplained, NULL },
+  { "check-sheet", "text prompt json csv", build_sheet, NULL },
   { "help-page", "text prompt json csv", build_help, NULL },
   { "trend", "text prompt json csv", build_trend, NULL },
   { "unit", "prompt json", NULL, fail_unit },

@@ -263,6 +263,7 @@ applies (const struct check *check, const struct reading_rule *rule, unsigned si
   case READING_CALORIFIC_1995:
   case READING_CALORIFIC_2016: return (touched & TOUCH_COMBUSTION) != 0;
   case READING_OXYGEN:
+  case READING_OXYGEN_WET:
   case READING_OXYGEN_OUT: return (touched & TOUCH_OXYGEN) != 0;
   case READING_Z_IN: return check->base[side].settings.model == GAS_MODEL_IDEAL;
   case READING_VOLUMES_REAL: return (touched & TOUCH_VOLUMES) != 0;

@@ -33,6 +33,7 @@ changes[] = {
   { "moisture atmospheric", READING_MOISTURE_ATMOSPHERIC, WORDS_NONE },
   { "moisture out", READING_MOISTURE_OUT, WORDS_NONE },
   { "oxygen out", READING_OXYGEN_OUT, WORDS_NONE },
+  { "oxygen wet", READING_OXYGEN_WET, WORDS_NONE },
   { "oxygen", READING_OXYGEN, WORDS_QUANTITY },
   { "reference", READING_REFERENCE, WORDS_REFERENCES },
   { "state pressure", READING_STATE_P, WORDS_NONE },

@@ -16,7 +16,8 @@ enum reading_change { READING_REFERENCE, READING_UNIT, READING_BAROMETER, READIN
                       READING_MOISTURE_OUT, READING_MOISTURE_ATMOSPHERIC, READING_Z_OUT,
                       READING_Z_INVERSE, READING_Z_IN, READING_VOLUMES_REAL, READING_HEAT,
                       READING_COMBUSTION, READING_CALORIFIC_1995, READING_CALORIFIC_2016,
-                      READING_OXYGEN, READING_OXYGEN_OUT, READING_COUNTED, READING_ICE,
+                      READING_OXYGEN, READING_OXYGEN_OUT, READING_OXYGEN_WET, READING_COUNTED,
+                      READING_ICE,
                       READING_FACTOR };
 
 /* The side of a check a reading changes, as bits; both at once is another thing than either.  */

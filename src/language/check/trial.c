@@ -86,6 +86,7 @@ apply_trial (const struct check *check, const struct candidate *candidate, struc
   case READING_Z_OUT: trial->Z_out = true; break;
   case READING_Z_INVERSE: trial->Z_inverse = true; break;
   case READING_HEAT: trial->other_heat = true; break;
+  case READING_OXYGEN_WET: trial->wet_oxygen = true; break;
   case READING_OXYGEN_OUT: trial->no_oxygen = true; break;
   case READING_COUNTED: trial->counted_as = candidate->counted; break;
   case READING_ICE: trial->ice_point = rule->value; break;
@@ -124,7 +125,8 @@ slot (const struct candidate *c)
   case READING_MOISTURE_ATMOSPHERIC: return READING_MOISTURE_OUT;
   case READING_Z_INVERSE: case READING_Z_IN: return READING_Z_OUT;
   case READING_CALORIFIC_2016: return READING_CALORIFIC_1995;
-  case READING_OXYGEN_OUT: return READING_OXYGEN;
+  case READING_OXYGEN_OUT:
+  case READING_OXYGEN_WET: return READING_OXYGEN;
   case READING_ABSOLUTE: return READING_GAUGE;
   default: return (int) change;
   }

@@ -87,6 +87,11 @@ static double
 dry_oxygen (struct conversion *c, const struct composition *gas)
 {
   double y = composition_fraction (gas, c->ev->session->water);
+  const struct value *v = c->value;
+  const struct composition *wet = v->of_stream ? v->stream.gas : v->gas->closed;
+  if (c->ev->settings->trial.wet_oxygen && wet) {
+    return composition_fraction (wet, c->ev->session->oxygen);
+  }
   return y < 1 ? composition_fraction (gas, c->ev->session->oxygen) / (1 - y) : 0;
 }
 
