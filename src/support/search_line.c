@@ -82,7 +82,7 @@ figure_at (double x, void *context)
   double objective;
   if (!look (l, x, l->scratch, &objective)) {
     l->undefined = true;
-    return GSL_NAN;
+    return (double) NAN;
   }
   return l->sign * (l->k < l->s->m ? l->scratch[l->k] : objective);
 }
@@ -145,9 +145,9 @@ look_at_grid (struct line *l)
       any = true;
       continue;
     }
-    l->objective[i] = GSL_NAN;
+    l->objective[i] = (double) NAN;
     for (size_t k = 0; k < l->s->m; k++) {
-      at_point (l, i)[k] = GSL_NAN;
+      at_point (l, i)[k] = (double) NAN;
     }
   }
   return any;
@@ -420,7 +420,7 @@ search_line (const struct search *s, double x, struct search_finding *out)
   l->s = s;
   l->c = ARENA_ARRAY (s->arena, GRID_MOST * s->m, double);
   l->scratch = ARENA_ARRAY (s->arena, s->m, double);
-  l->nearest_worst = GSL_NAN;
+  l->nearest_worst = (double) NAN;
   l->nearest = x;
   *out = (struct search_finding) { .x = ARENA_ARRAY (s->arena, 1, double),
                                    .c = ARENA_ARRAY (s->arena, s->m, double) };

@@ -122,6 +122,74 @@ trim n, h so CO2 of mix at most %r mol%% and H2 of mix at least %r mol%% \\
         tap.tell(wrong, "least cost %d has a row" % i)
 
 
+def search_grid(feasible, cost, high):
+    """The least cost on grids that close in on the best point: no more than an upper bound."""
+    (left, right), (low, top) = (0, high[0]), (0, high[1])
+    best = None
+    for _ in range(7):
+        for i, k in itertools.product(range(61), repeat=2):
+            x, y = left + (right - left) * i / 60, low + (top - low) * k / 60
+            if feasible(x, y) and (best is None or cost(x, y) < cost(*best)):
+                best = x, y
+        if best is None:
+            return None
+        wide, tall = (right - left) / 8, (top - low) / 8
+        left, right = max(0, best[0] - wide), best[0] + wide
+        low, top = max(0, best[1] - tall), best[1] + tall
+    return cost(*best)
+
+
+def dosing(tap, rng):
+    """Propane and nitrogen into upgraded gas, limits on calorific value, Wobbe index and nitrogen:
+    no point of a grid is cheaper, and the limits hold by mixing rules written out here."""
+    pure = session.figures(session.answers("""gas base = CH4 98, CO2 2 mol%
+gross calorific value of base in MJ/m3 as H0
+gross calorific value of C3H8 in MJ/m3 as H1
+relative density of base
+relative density of C3H8
+relative density of N2
+"""))
+    H0, H1, d0, d1, d2 = (pure[name][0]["value"] for name in
+                          ("H0", "H1", "relative density of base", "relative density of C3H8",
+                           "relative density of N2"))
+    for i in range(8):
+        flow, lpg, inert = rng.uniform(100, 2000), rng.uniform(0.01, 0.08), rng.uniform(0, 0.05)
+        price = rng.uniform(0.5, 2), rng.uniform(0.1, 2)
+
+        def figures(x, y, flow=flow):
+            whole = flow + x + y
+            H = (flow * H0 + x * H1) / whole
+            return H, H / ((flow * d0 + x * d1 + y * d2) / whole) ** 0.5, 100 * y / whole
+
+        def cost(x, y, price=price):
+            return price[0] * x + price[1] * y
+
+        H, W, share = figures(lpg * flow, inert * flow)
+        least, low = H * rng.uniform(0.99, 1), W * rng.uniform(0.98, 1)
+        high = W * rng.uniform(1, 1.01)
+        most = share * rng.uniform(1, 1.5)
+
+        def holds(x, y, least=least, low=low, high=high, most=most, slack=0.0):
+            H, W, share = figures(x, y)
+            return (H >= least * (1 - slack) and low * (1 - slack) <= W <= high * (1 + slack)
+                    and share <= most * (1 + slack))
+
+        thing = last("""gas base = CH4 98, CO2 2 mol%%
+let x = 5 Sm3/h; let y = 5 Sm3/h
+stream mix = %r Sm3/h of base + x of C3H8 + y of N2
+trim x, y so gross calorific value of mix at least %r MJ/m3, N2 of mix at most %r mol%%, \\
+  wobbe of mix within %r .. %r MJ/m3 with least %r * x + %r * y
+""" % (flow, least, most, low, high, *price))
+        got = values(thing)
+        bound = search_grid(holds, cost, (0.2 * flow, 0.2 * flow))
+        wrong = session.faults([thing])
+        if not wrong:
+            wrong = [] if holds(got["x"], got["y"], slack=1e-9) else ["a limit is broken"]
+            wrong += [] if cost(got["x"], got["y"]) <= bound * (1 + 1e-8) else \
+                ["%r is dearer than %r" % (cost(got["x"], got["y"]), bound)]
+        tap.tell(wrong, "dosing %d, seed %d" % (i, SEED))
+
+
 def several_values(tap):
     """(x - 2)(x - 3) by hand."""
     thing = last("let x = 2.9\ntrim x from 0 to 10 so x * x - 5 * x = -6\n")
@@ -171,7 +239,7 @@ a in kmol/h as a3
 
 
 def as_typed(tap):
-    """A quantity keeps its words, its unit and its uncertainty; bar(g) counts from the barometer."""
+    """A quantity keeps words, unit and uncertainty; bar(g) counts from the barometer."""
     for typed, aim, label, want, kept in (
             ("850 Nm3/h \u00b1 2 % (k=2)", "x of N2 = 900 kg/h", "x", 900 / 28.014 * 22.41396954,
              "Nm3/h +/- 2 % (k=2)"),
@@ -202,6 +270,7 @@ def main():
     dilution(tap, rng)
     wobbe(tap, rng)
     corners(tap, rng)
+    dosing(tap, rng)
     several_values(tap)
     session_follows(tap)
     as_typed(tap)
