@@ -154,7 +154,8 @@ counted_mass (struct conversion *c, double *mass_per_mole, double *moles_per_mol
 
 /* vol% real: phi_i = x_i Z_i/sum x_k Z_k, Z of the unmixed parts (ISO 14912:2003).  */
 static bool
-real_volume_share (struct conversion *c, const struct host *host, double *phi)
+real_volume_share (struct conversion *c, const struct host *host, double *phi,
+                   const char **basis)
 {
   const struct value *v = c->value;
   struct state at = c->state;
@@ -186,6 +187,11 @@ real_volume_share (struct conversion *c, const struct host *host, double *phi)
   RECORD (c->ev, .name = "share of the unmixed volumes", .formula = "phi = s_c/s", .value = *phi,
           .unit = "m3/m3", .source = "ISO 14912:2003, phi_i = x_i Z_i/sum x_k Z_k",
           STEP_SYMBOLS (SYMBOL ("s_c", own, "1"), SYMBOL ("s", sum, "1")));
+  *basis = c->ev->describe
+             ? arena_format (c->ev->arena, "of the parts unmixed at %s, %s, real",
+                             temperature_text (c->ev->arena, at.T, false),
+                             pressure_text (c->ev->arena, at.p, false))
+             : NULL;
   return true;
 }
 
@@ -283,7 +289,11 @@ concentration (struct conversion *c)
   }
   if (u->ratio == RATIO_VOLUME && (c->words & WORD_REAL)) {
     double phi;
-    return real_volume_share (c, &host, &phi) && conversion_add (c, phi * factor, &standing);
+    if (!real_volume_share (c, &host, &phi, &standing.basis)) {
+      return false;
+    }
+    standing.basis = with_oxygen (c, standing.basis);
+    return conversion_add (c, phi * factor, &standing);
   }
   if (u->ratio == RATIO_ENERGY) {
     return fault_set_at (c->ev->fault, MESSAGE_NOT_AVAILABLE, c->at, "calorific values", NULL);
