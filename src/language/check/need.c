@@ -9,11 +9,11 @@
 #include "units/constants.h"
 
 /* What would have to be true instead, all else as stated: the temperature, pressure, humidity or
-   compressibility of the states, or the temperature of reference volumes, that brings the computed
+   compressibility of the states, the barometer, or the temperature of reference volumes, that brings the computed
    figure to the claim.  A sign change is looked for on a grid and closed in on by Brent's method
    (Brent 1973, ch. 4; GSL).                                                                     */
 
-enum quantity { NEED_T, NEED_P, NEED_HUMIDITY, NEED_Z, NEED_FAMILY_T };
+enum quantity { NEED_T, NEED_P, NEED_HUMIDITY, NEED_Z, NEED_BAROMETER, NEED_FAMILY_T };
 
 struct unknown {
   struct check *check;
@@ -31,6 +31,7 @@ static const struct looked_for looked_for[] = {
   [NEED_P] = { "pressure", "bar(a)", 1e3, 1e8, 1e5, 0 },
   [NEED_HUMIDITY] = { "humidity", "%RH", 1e-4, 1, 0.01, 0 },
   [NEED_Z] = { "compressibility Z", "", 0.1, 4, 1, 0 },
+  [NEED_BAROMETER] = { "barometer", "bar", 3e4, 1.1e5, 1e5, 0 },
   [NEED_FAMILY_T] = { "temperature", "degC", 223.15, 373.15, 1, ICE_POINT },
 };
 
@@ -47,10 +48,16 @@ figure_with (const struct unknown *u, double x, double *figure)
   case NEED_P: side->settings.trial.p = x; break;
   case NEED_HUMIDITY: side->settings.trial.humidity = x; break;
   case NEED_Z: side->settings.trial.Z = x; break;
+  case NEED_BAROMETER:
+    for (int i = 0; i < SIDES; i++) {
+      sides[i].settings.site_pressure = x;
+      sides[i].overridden |= TOUCH_SITE;
+    }
+    break;
   case NEED_FAMILY_T: side->settings.family[u->family].at.T = x; break;
   }
-  return check_figure_at (check, sides, u->side == SIDE_STATED ? &check->value : NULL, figure,
-                          &unit)
+  bool told_only = u->side == SIDE_STATED && u->quantity != NEED_BAROMETER;
+  return check_figure_at (check, sides, told_only ? &check->value : NULL, figure, &unit)
          && isfinite (*figure);
 }
 
@@ -141,6 +148,10 @@ search_needs (struct check *check)
       struct unknown u = { check, (enum quantity) q, side, FAMILY_NONE };
       add_need (&u, end == before ? NULL : "the stated figure", &end);
     }
+  }
+  if ((check->touched[SIDE_COMPUTED] | check->touched[SIDE_STATED]) & TOUCH_SITE) {
+    struct unknown u = { check, NEED_BAROMETER, SIDE_COMPUTED, FAMILY_NONE };
+    add_need (&u, NULL, &end);
   }
   for (int side = 0; side < SIDES; side++)
     for (int f = FAMILY_NONE + 1; f < FAMILY_COUNT; f++)
