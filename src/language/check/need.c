@@ -9,9 +9,9 @@
 #include "units/constants.h"
 
 /* What would have to be true instead, all else as stated: the temperature, pressure, humidity or
-   compressibility of the states, the barometer, or the temperature of reference volumes, that brings the computed
-   figure to the claim.  A sign change is looked for on a grid and closed in on by Brent's method
-   (Brent 1973, ch. 4; GSL).                                                                     */
+   compressibility of the states, the barometer, or the temperature of reference volumes, that
+   brings the computed figure to the claim.  A sign change is looked for on a grid and closed in on
+   by Brent's method (Brent 1973, ch. 4; GSL).                                                   */
 
 enum quantity { NEED_T, NEED_P, NEED_HUMIDITY, NEED_Z, NEED_BAROMETER, NEED_FAMILY_T };
 
