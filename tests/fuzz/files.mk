@@ -6,9 +6,21 @@ check_PROGRAMS += %D%/mutate
   %D%/mutate.c
 %C%_mutate_LDADD = src/report/libreport.a $(upto_language) $(GSL_LIBS)
 
-EXTRA_DIST += %D%/fuzz.sh %D%/libfuzzer.c
-TESTS += %D%/fuzz.sh
-CLEANFILES += %D%/fuzz
+check_PROGRAMS += %D%/mutate_cells
+%C%_mutate_cells_SOURCES = \
+  %D%/cells.c \
+  %D%/cells.h \
+  %D%/mutate_cells.c
+%C%_mutate_cells_LDADD = $(upto_gas) $(GSL_LIBS)
+
+EXTRA_DIST += \
+  %D%/by_component.csv \
+  %D%/fuzz.sh \
+  %D%/fuzz_cells.sh \
+  %D%/libfuzzer.c \
+  %D%/libfuzzer_cells.c
+TESTS += %D%/fuzz.sh %D%/fuzz_cells.sh
+CLEANFILES += %D%/fuzz %D%/fuzz_cells
 
 .PHONY: fuzz
 fuzz: $(BUILT_SOURCES)
@@ -16,3 +28,7 @@ fuzz: $(BUILT_SOURCES)
 	  -I. $(AM_CPPFLAGS) $(GSL_CFLAGS) $(srcdir)/%D%/lines.c $(srcdir)/%D%/libfuzzer.c \
 	  made/tables.c $$(find $(srcdir)/src -name '*.c' ! -path '*/shell/*') -o %D%/fuzz \
 	  $(GSL_LIBS) -lm
+	clang -std=c17 -g -O1 -fsanitize=fuzzer,address,undefined -fno-sanitize-recover=all \
+	  -I. $(AM_CPPFLAGS) $(GSL_CFLAGS) $(srcdir)/%D%/cells.c $(srcdir)/%D%/libfuzzer_cells.c \
+	  made/tables.c $$(find $(srcdir)/src/support $(srcdir)/src/units $(srcdir)/src/gas -name '*.c') \
+	  -o %D%/fuzz_cells $(GSL_LIBS) -lm
