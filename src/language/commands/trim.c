@@ -411,6 +411,13 @@ is_determined (struct trim *t, struct fault *fault)
   const struct statement *s = t->statement;
   size_t equalities = 0, i = 0;
   for (const struct aim *a = s->aims; a; a = a->next, i++) {
+    if (a->right->kind == NODE_QUANTITY && a->right->spread) {
+      fault_set_at (fault, MESSAGE_KIND_WRONG, a->right->at, "an aim is met or not: it has no +/-",
+                    NULL);
+      fault_hint (fault, "a tolerance is a range: %s within LOWEST .. HIGHEST",
+                  node_text (t->arena, s, a->left));
+      return false;
+    }
     t->one_sided[i] = a->is != COMPARE_EQUAL;
     equalities += a->is == COMPARE_EQUAL;
   }

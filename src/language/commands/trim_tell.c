@@ -205,6 +205,9 @@ tell_reach (struct trim *t, struct result *result)
                                                with_unit (t, end, unit_of (t, 0)))));
 }
 
+/* More sources than this make a line nobody reads.  */
+#define SOURCES_TOLD 3
+
 /* Of several quantities: what an aim comes to with each of them alone, where it lies between.  */
 static void
 tell_sources (struct trim *t, const struct aim *aim, struct result *result)
@@ -213,8 +216,8 @@ tell_sources (struct trim *t, const struct aim *aim, struct result *result)
   const char *text = "", *unit = aim_unit (t, aim);
   struct fault unheard;
   fault_init (&unheard, t->arena);
-  if (t->count < 2 || aim->left->kind != NODE_OF || aim->is != COMPARE_EQUAL
-      || !trim_figure (t, aim, t->x, &here, &unheard)) {
+  if (t->count < 2 || t->count > SOURCES_TOLD || aim->is != COMPARE_EQUAL
+      || aim->left->kind != NODE_OF || !trim_figure (t, aim, t->x, &here, &unheard)) {
     return;
   }
   for (size_t i = 0; i < t->count; i++) {
