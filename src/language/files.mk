@@ -102,6 +102,9 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/parse/scan.c \
   %D%/parse/scan.h \
   %D%/properties.def \
+  %D%/property_names.c \
+  %D%/property_names.def \
+  %D%/property_names.h \
   %D%/session.c \
   %D%/session.h \
   %D%/session_private.h \

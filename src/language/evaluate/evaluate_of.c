@@ -7,6 +7,7 @@
 #include "gas/species.h"
 #include "language/evaluate/flow.h"
 #include "language/evaluate/record.h"
+#include "language/property_names.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
@@ -109,6 +110,30 @@ record_part (struct evaluation *ev, const struct value *part, const struct compo
                         { "M_i", M, "kg/mol", STEP_WEIGHTS, NULL }));
 }
 
+/* What is no component may be a property misspelt, or called otherwise elsewhere.  */
+static void
+offer_property (struct evaluation *ev, const char *name)
+{
+  const char *meant = ev->fault->kind == MESSAGE_NAME_UNKNOWN && ev->describe
+                        ? property_meant (name) : NULL;
+  if (meant) {
+    ev->fault->fact[1] = arena_format (ev->fault->arena, "did you mean '%s of'?", meant);
+  }
+}
+
+/* `HHV` is a formula of hydrogen and vanadium, that nobody has in a gas.  */
+static bool
+is_no_property (struct evaluation *ev, const struct node *name, const struct value *part)
+{
+  bool formula = part->species.count == 1 && part->species.at[0]->origin == SPECIES_FORMULA;
+  if (!formula || part->moles > 0 || !property_meant (name->text)) {
+    return true;
+  }
+  fault_set_at (ev->fault, MESSAGE_NAME_UNKNOWN, name->at, name->text, NULL);
+  offer_property (ev, name->text);
+  return false;
+}
+
 static bool
 part_of (struct evaluation *ev, const struct node *node, const struct state *state,
          struct value *out)
@@ -119,8 +144,11 @@ part_of (struct evaluation *ev, const struct node *node, const struct state *sta
                          "the oxygen to correct to stands with the target: in ppm dry, 3 %O2",
                          NULL);
   }
-  if (!evaluate (ev, node->b, state, &whole)
-      || !species_named (ev, node->a, &part.species)) {
+  if (!evaluate (ev, node->b, state, &whole)) {
+    return false;
+  }
+  if (!species_named (ev, node->a, &part.species)) {
+    offer_property (ev, node->a->text);
     return false;
   }
   part.kind = VALUE_PART;
@@ -148,7 +176,7 @@ part_of (struct evaluation *ev, const struct node *node, const struct state *sta
                          "a component is one of a gas or of a stream", NULL);
   }
   *out = part;
-  return true;
+  return is_no_property (ev, node->a, &part);
 }
 
 /* ---- Shares ---- */

@@ -53,7 +53,10 @@ property_needs (struct evaluation *ev, const struct property_question *q, bool T
   }
   const struct node *of = q->node->b;
   const char *name = property_text[q->property];
-  fault_set_at (ev->fault, MESSAGE_STATE_MISSING, of->at, name, NULL);
+  bool lacks_T = T && isnan (q->T), lacks_p = p && isnan (q->p);
+  fault_set_at (ev->fault, lacks_T && lacks_p ? MESSAGE_STATE_MISSING
+                           : lacks_T ? MESSAGE_TEMPERATURE_MISSING : MESSAGE_PRESSURE_MISSING,
+                of->at, name, NULL);
   const char *unit = property_unit[q->property];
   fault_hint (ev->fault, "%s of %s at %s%s%s", name, of->kind == NODE_NAME ? of->text : "...",
               T && p ? "20 degC, 1 bar(a)" : p ? "1 bar(a)" : "20 degC", *unit ? " in " : "", unit);

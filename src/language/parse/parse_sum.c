@@ -3,6 +3,7 @@
 
 #include <string.h>
 #include "gas/species.h"
+#include "language/property_names.h"
 
 static const char MULTIPLE[] = "a share is written in %: 5 % of mix; a multiple with *: 2 * feed";
 
@@ -86,6 +87,23 @@ parse_function (struct parser *p, enum node_kind kind)
   return node->a != NULL ? node : NULL;
 }
 
+/* NAME, if not null, and the words up to `of`, where they are few: `wobbe index of`; null.  */
+static const char *
+words_to_of (struct parser *p, const struct node *name)
+{
+  enum { MOST_WORDS = 3 };
+  struct look look = look_here (p);
+  const char *text = name != NULL ? name->text : NULL;
+  for (int i = 0; i < MOST_WORDS && look.token.kind == TOKEN_WORD; i++) {
+    if (token_is (p, &look.token, "of"))
+      return i > 0 ? text : NULL;
+    const char *word = token_text (p, &look.token);
+    text = text != NULL ? arena_format (p->arena, "%s %s", text, word) : word;
+    look_next (&look);
+  }
+  return token_is (p, &look.token, "of") ? text : NULL;
+}
+
 /* NAME WORD, where WORD is no unit: `CO2 feed`.  */
 static bool
 explain_unit_behind (struct parser *p, const struct node *name)
@@ -95,6 +113,11 @@ explain_unit_behind (struct parser *p, const struct node *name)
   size_t n = strlen (name->text);
   if (p->fault->kind != MESSAGE_UNIT_UNKNOWN)
     return false;
+  const char *words = words_to_of (p, name), *meant = words != NULL ? property_meant (words) : NULL;
+  if (meant != NULL) {
+    fault_hint (p->fault, "did you mean '%s of'?", meant);
+    return false;
+  }
   bool property = false;
 #define PROPERTY(id, name_of_it, unit, help) \
   property = property || strcmp (name->text, name_of_it) == 0;
@@ -226,8 +249,12 @@ fail_head (struct parser *p, bool behind_of)
     fail_here (p, MESSAGE_NAME_EXPECTED, "of what?", NULL);
   else if (at_word (p, "in") && p->token.start == p->begin)
     fail_here (p, MESSAGE_SUBJECT_MISSING, NULL, NULL);
-  else
-    fail_unexpected (p, NULL);
+  else {
+    const char *words = words_to_of (p, NULL);
+    const char *meant = words != NULL ? property_meant (words) : NULL;
+    fail_unexpected (p, meant == NULL ? NULL
+                     : arena_format (p->arena, "did you mean '%s of'?", meant));
+  }
   return NULL;
 }
 
