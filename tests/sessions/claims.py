@@ -68,7 +68,7 @@ def as_typed(value, digits):
     return "%.*f" % (max(places, 0), round(value, places))
 
 
-# Each kind of claim: statement, unit, figure under a reading taken by chance, piece of its sentence.
+# Each kind of claim: statement, unit, figure under a reading taken by chance, piece of what is said.
 
 def reference_of_flow(chance):
     gas, flow = chance.choice(sorted(M)), chance.randint(120, 9800)
@@ -167,7 +167,80 @@ def nitrogen(chance):
     return "%d ppm of NO" % ppm, "mg/Nm3", ppm * 1e-6 * 46.005 / NM3 * 1000, "as NO2"
 
 
-KINDS = (reference_of_flow, reference_of_claim, reference_of_controller, open_volume, altitude,
+def ice_point(chance):
+    T, flow = chance.randint(5, 80), chance.randint(100, 5000)
+    n = flow * ATM / (R * (T + 273.0))
+    return "%d m3/h of N2 at %d degC, 1 atm, Z 1" % (flow, T), "Nm3/h", n * NM3, "taken as 273 K"
+
+
+def barometer(chance):
+    p, T, flow = chance.randint(1, 30), chance.randint(5, 60), chance.randint(100, 5000)
+    site, said = chance.choice(((1e5, "barometer taken as 1 bar"),
+                                (14.7 * PSI, "barometer taken as 14.7 psia")))
+    n = flow * (1e4 * p + site) / (R * (T + ICE))
+    return "%d m3/h of N2 at %d mbar(g), %d degC, Z 1" % (flow, 100 * p, T), "Nm3/h", n * NM3, said
+
+
+def gallons(chance):
+    T, flow = chance.randint(5, 60), chance.randint(100, 5000)
+    ours, theirs, litres = chance.choice((("US", "UK", 4.54609),
+                                          ("UK", "US", 231 * 0.0254 ** 3 * 1e3)))
+    n = flow * litres * 60 / 1000 * 3e5 / (R * (T + ICE))
+    return ("%d gal(%s)/min of CO2 at %d degC, 3 bar(a), Z 1" % (flow, ours, T), "kg/h",
+            n * M["CO2"] / 1000, "gal(%s) where gal(%s)" % (theirs, ours))
+
+
+def sulfur(chance):
+    ppm = chance.randint(20, 900)
+    mass, said = chance.choice(((32.06, "counts sulfur"), (64.058, "sulfur as SO2")))
+    return "%d ppm of H2S" % ppm, "mg/Nm3", ppm * 1e-6 * mass / NM3 * 1000, said
+
+
+def trace(chance):
+    ppm, x = chance.randint(20, 900), chance.randint(20, 80)
+    mean = (x * 16.043 + (100 - x) * 44.009) / 100
+    return ("%d ppm of H2S within host" % ppm, "mg/Nm3", ppm * 1e-6 * mean / NM3 * 1000,
+            "ppmw where ppm", "gas host = CH4 %d, CO2 %d mol%%" % (x, 100 - x))
+
+
+def oxygen(chance):
+    ppm, O2, y = chance.randint(20, 400), chance.randint(40, 130) / 10, chance.randint(5, 18)
+    dry, air = O2 / (1 - y / 100), 20.95
+    case = chance.choice(("21", "out", "wet"))
+    if dry > 17:
+        dry, O2 = 10.0, 10.0 * (1 - y / 100)
+    factor = {"21": (21 - 3) / (21 - dry), "out": 1.0, "wet": (air - 3) / (air - O2)}[case]
+    said = {"21": "oxygen in air taken as 21", "out": "reference oxygen was left out",
+            "wet": "measured wet"}[case]
+    return ("CO of flue in mg/Nm3 dry, 3 %O2", "mg/Nm3",
+            ppm * 1e-6 / (1 - y / 100) * 28.010 / NM3 * 1000 * factor, said,
+            "gas flue = CO %d ppm, O2 %.9g, H2O %d, N2 rest mol%%" % (ppm, O2, y))
+
+
+def energy_units(chance):
+    flow = chance.randint(1000, 9000)
+    joules = flow / NM3 * 891.51e3
+    unit, factor, said = chance.choice((
+        ("MMBtu/h gross", 1 / 1054.350e6, "MMBtu(th) where MMBtu"),
+        ("MJ/h gross", 1 / 3.6e6, "kWh where MJ"), ("kWh/h gross", 1e-6, "MJ where kWh"),
+        ("kJ/h gross", 1 / 4186.8, "kcal where kJ")))
+    return "%d Nm3/h of CH4" % flow, unit, joules * factor, said
+
+
+def moles(chance):
+    flow = chance.randint(1000, 9000)
+    return ("%d Nm3/h of N2" % flow, "kmol/h", flow / NM3 / 453.59237, "lbmol where kmol")
+
+
+def moisture(chance):
+    T, p, flow = chance.randint(30, 80), chance.randint(1100, 1900), chance.randint(100, 5000)
+    n = flow * 100 * p / (R * (T + ICE))
+    return ("%d m3/h of N2 at %d degC, %d mbar(a), saturated, Z 1" % (flow, T, p), "kg/h",
+            n * M["N2"] / 1000, "moisture was left out")
+
+
+KINDS = (ice_point, barometer, gallons, sulfur, trace, oxygen, energy_units, moles, moisture,
+         reference_of_flow, reference_of_claim, reference_of_controller, open_volume, altitude,
          gauge, compressibility, units, fahrenheit, dry, shares, heat, nitrogen)
 
 
