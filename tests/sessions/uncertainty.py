@@ -284,8 +284,24 @@ def trials(tap):
              else repr(exact), "nothing that is uncertain")
 
 
+def cards(tap):
+    """The card of an uncertain gas has the uncertainties of its lines, others have none."""
+    gas = ("gas g = CH4 62.10 +/- 0.30, CO2 33.40 +/- 0.25, O2 0.55 +/- 0.05, H2S 0.12 +/- 0.01, "
+           "N2 rest mol%\ngas h = CH4 60, CO2 rest mol%\n")
+    cards_of = [thing["card"]["lines"] for thing in session.answers(
+        gas + "show g\nset coverage 2\nshow g\nshow h\n") if "card" in thing]
+    # u(M) 0.053787 g/mol: JCGM 100:2008 with the closure's correlation, as above.
+    for lines, wanted in zip(cards_of, ("molar mass ± 0.054 g/mol", "molar mass ± 0.11 g/mol")):
+        tap.tell("" if any(line.startswith(wanted) for line in lines) else repr(lines),
+                 "on the card: " + wanted)
+    tap.tell("" if any("(k=2)" in line for line in cards_of[1]) else repr(cards_of[1]),
+             "and by what it is expanded")
+    tap.tell([line for line in cards_of[2] if "±" in line], "nothing uncertain, nothing told")
+
+
 def main():
     tap = session.Tap()
+    cards(tap)
     standard(tap)
     settings(tap)
     another_library(tap)

@@ -8,6 +8,7 @@
 #include "gas/composition.h"
 #include "gas/gathering.h"
 #include "gas/species.h"
+#include "language/evaluate/uncertainty.h"
 #include "language/evaluate/wording.h"
 #include "property/calorific.h"
 #include "property/flammability.h"
@@ -159,14 +160,46 @@ molar_line (struct session *session, struct result *result, struct card *card,
                                             gas->molar_mass / heat_air_molar_mass (&ev))));
 }
 
+/* What the uncertain figures do to the lines above, asked as a user would ask it.  */
+static void
+uncertain_line (struct session *session, const char *name, struct result *result,
+                struct card *card)
+{
+  static const struct { const char *say, *unit, *property, *target; } asked[] = {
+    { "molar mass", " g/mol", "molar mass", "g/mol" },
+    { "gross", " MJ/m3", "gross calorific value", "MJ/m3 ideal" },
+    { "net", "", "net calorific value", "MJ/m3 ideal" },
+    { "wobbe", "", "wobbe", "MJ/m3 ideal" },
+  };
+  struct arena *arena = result->arena;
+  double k = session->settings.coverage;
+  const char *line = "";
+  for (size_t i = 0; i < sizeof asked / sizeof asked[0]; i++) {
+    const char *ask = arena_format (arena, "%s of %s in %s", asked[i].property,
+                                    name_text (arena, name), asked[i].target);
+    double u = uncertainty_of_question (session, arena, ask);
+    if (u > 0) {
+      line = arena_format (arena, "%s%s%s ± %s%s", line, *line ? "  .  " : "", asked[i].say,
+                           spread_text (arena, k * u), asked[i].unit);
+    }
+  }
+  if (*line) {
+    card_add_line (result, card, k > 1 ? arena_format (arena, "%s  (k=%s)", line,
+                                                       figure_text (arena, k)) : line);
+  }
+}
+
 void
-card_add_limits (struct result *result, struct card *card, const struct composition *gas)
+card_add_limits (struct session *session, struct result *result, struct card *card,
+                 const struct composition *gas)
 {
   struct flammability f;
   struct fault unheard;
   struct arena *arena = result->arena;
+  struct flammable_limits *stated;
+  size_t n = limits_set (&session->settings, NULL, arena, &stated);
   fault_init (&unheard, arena);
-  if (flammability_of (gas, NULL, 0, &f, NULL, &unheard) && f.kind == FLAMMABLE_BETWEEN) {
+  if (flammability_of (gas, stated, n, &f, NULL, &unheard) && f.kind == FLAMMABLE_BETWEEN) {
     const char *to = isnan (f.upper) ? "" : f.upper_is_bound ? " to at most " : " to ";
     card_add_line (result, card,
                    arena_format (arena, "flammable in air from %s%s%s vol%%",
@@ -251,7 +284,11 @@ closed_card (struct session *session, const struct gas_value *gas, const char *n
   }
   molar_line (session, result, card, c);
   heat_line (session, result, card, c);
-  card_add_limits (result, card, c);
+  struct definition *d = name_find (session, name, strlen (name));
+  if (d && d->source_count > 0) {
+    uncertain_line (session, name, result, card);
+  }
+  card_add_limits (session, result, card, c);
 }
 
 /* An open gas: only what was stated, and how to close it.  */

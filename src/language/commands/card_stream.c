@@ -174,7 +174,7 @@ card_of_stream (struct session *session, const struct stream *stream, const char
   }
   card_add_line (result, card, state_line (result->arena, stream));
   card_add_line (result, card, parts_line (result->arena, stream->gas));
-  card_add_limits (result, card, stream->gas);
+  card_add_limits (session, result, card, stream->gas);
   return true;
 }
 

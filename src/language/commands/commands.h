@@ -42,7 +42,8 @@ void card_of_settings (struct session *, const enum setting *one, struct result 
 void card_add_figure (struct result *, struct card *, const char *name, double value,
                       const char *unit, const char *basis);
 /* A line that says where it burns in air; none for a gas that does not.  */
-void card_add_limits (struct result *, struct card *, const struct composition *);
+void card_add_limits (struct session *, struct result *, struct card *,
+                      const struct composition *);
 
 /* "gas model".  */
 const char *setting_name (enum setting);

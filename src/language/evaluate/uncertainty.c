@@ -133,3 +133,23 @@ uncertainty_budgets (const struct evaluation *first, const struct statement *s,
   }
   return budgets;
 }
+
+double
+uncertainty_of_question (struct session *session, struct arena *arena, const char *question)
+{
+  struct parser *parser = parser_create (arena, &session->vocabulary, question,
+                                         strlen (question), 1, BLOCK_NONE);
+  struct statement *s;
+  struct evaluation ev;
+  struct fault unheard;
+  struct value value;
+  struct figures figures = { NULL, 0, 0 };
+  fault_init (&unheard, arena);
+  if (!parser_next (parser, &s, &unheard) || !s) {
+    return UNSTATED;
+  }
+  evaluation_init (&ev, session, NULL, &unheard);
+  const struct budget **budgets = question_figures (&ev, s, &value, &figures)
+                                    ? uncertainty_budgets (&ev, s, &figures) : NULL;
+  return budgets && figures.count > 0 && budgets[0] ? budgets[0]->uncertainty : UNSTATED;
+}

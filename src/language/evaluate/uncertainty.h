@@ -10,7 +10,7 @@
 
 #include "support/check.h"
 
-struct budget; struct evaluation; struct figures; struct statement;
+struct arena; struct budget; struct evaluation; struct figures; struct session; struct statement;
 
 /* The budgets of FIGURES, which FIRST found for the question S: one for each, in its order; null
    where no source moves it.  In the arena of FIRST.  Null with the fault of FIRST, placed in S, if
@@ -18,5 +18,9 @@ struct budget; struct evaluation; struct figures; struct statement;
 const struct budget **uncertainty_budgets (const struct evaluation *first,
                                            const struct statement *s,
                                            const struct figures *) MUST_CHECK;
+
+/* The standard uncertainty of the first figure that QUESTION, a statement, answers with; NAN where
+   it has none.  What is made for it is put in the arena.                                        */
+double uncertainty_of_question (struct session *, struct arena *, const char *question);
 
 #endif

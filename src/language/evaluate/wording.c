@@ -46,6 +46,13 @@ rough_text (struct arena *arena, double value)
 }
 
 const char *
+spread_text (struct arena *arena, double u)
+{
+  enum { SPREAD_DIGITS = 2 };
+  return digits_text (arena, u, SPREAD_DIGITS);
+}
+
+const char *
 share_text (struct arena *arena, double x)
 {
   if (fabs (x) < 0.000999 && x != 0) {

@@ -13,6 +13,8 @@ struct arena; struct composition; struct gas_value; struct species; struct unit;
 const char *figure_text (struct arena *, double value);
 /* Three digits, for a figure that only says how large something is: "170", "2000".  */
 const char *rough_text (struct arena *, double value);
+/* Two digits, for an uncertainty: "0.094".  */
+const char *spread_text (struct arena *, double u);
 /* A share as trade writes it: "3.44969 mol%", "850 ppm".  */
 const char *share_text (struct arena *, double mole_fraction);
 /* "38 degC", or "100.4 degF" for customary American units.  */
