@@ -110,7 +110,8 @@ NO of stack + NO2 of stack in kg/h counted as NO2 as e
 NO+NO2 of stack in mg/Nm3 counted as NO2, dry, %r %%O2 as f
 NO+NO2 of stack in ppm wet as g
 NO+NO2 of flue in mg/Nm3 as h
-""" % (oxygen, no, no2, flow, y, no, no, reference)
+%r mg/Nm3 dry of NO within stack at %r %%O2 in kg/h as k
+""" % (oxygen, no, no2, flow, y, no, no, reference, no, reference)
         found = session.figures(session.answers(text))
         dry = flow / NORMAL * (1 - y / 100) * 1e-6
         both = (no + no2) * 1e-6
@@ -120,13 +121,15 @@ NO+NO2 of flue in mg/Nm3 as h
                 "d": dry * (no + no2) * M["NO2"] / 1000, "e": dry * (no + no2) * M["NO2"] / 1000,
                 "f": both * M["NO2"] * 1000 / NORMAL * factor,
                 "g": both * 1e6 * (1 - y / 100),
+                "k": flow / NORMAL * (1 - y / 100) * NORMAL * no * 1e-6
+                     * (21 - oxygen) / (21 - reference),
                 "h": (no * M["NO"] + no2 * M["NO2"]) / 1000 / NORMAL}
         wrong = [label + ": " + session.off(found[label][0]["value"], value, 1e-9)
                  for label, value in want.items()
                  if label not in found or session.off(found[label][0]["value"], value, 1e-9)]
         tap.tell(wrong, "wet and dry %d, seed %d" % (i, SEED))
         shares = r"^[\d.]+ (ppm|mol%) of the wet gas, [\d.]+ (ppm|mol%) of the dry$"
-        wrong = [label for label in "abcde" if not re.match(shares, found[label][0]["basis"])]
+        wrong = [label for label in "abcdek" if not re.match(shares, found[label][0]["basis"])]
         tap.tell(wrong, "both shares are told %d" % i)
 
 

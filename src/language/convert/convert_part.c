@@ -95,14 +95,17 @@ dry_oxygen (struct conversion *c, const struct composition *gas)
   return y < 1 ? composition_fraction (gas, c->ev->session->oxygen) / (1 - y) : 0;
 }
 
+/* The oxygen a figure counts at: that of the target, else that of a trace as it was stated.  */
 static const char *
 with_oxygen (struct conversion *c, const char *basis)
 {
-  if (isnan (c->state.oxygen) || !c->ev->describe) {
+  double at = c->state.oxygen;
+  at = isnan (at) && c->value->kind == VALUE_TRACE ? c->value->oxygen : at;
+  if (isnan (at) || !c->ev->describe) {
     return basis;
   }
   const char *oxygen = arena_format (c->ev->arena, "at %s %% O2",
-                                     figure_text (c->ev->arena, 100 * c->state.oxygen));
+                                     figure_text (c->ev->arena, 100 * at));
   return basis ? arena_format (c->ev->arena, "%s, %s", basis, oxygen) : oxygen;
 }
 
@@ -439,6 +442,28 @@ trace_oxygen (struct conversion *c, double *factor)
   return oxygen_factor (c, v->oxygen, c->what, factor);
 }
 
+/* The factor from the oxygen a trace was stated at to that of the stream it is within.  */
+static bool
+trace_oxygen_of_stream (struct conversion *c, double *factor)
+{
+  const struct value *v = c->value;
+  const struct composition *gas = v->stream.gas;
+  *factor = 1;
+  if (isnan (v->oxygen)) {
+    return true;
+  }
+  double y = composition_fraction (gas, c->ev->session->water);
+  double oxygen = composition_fraction (gas, c->ev->session->oxygen) / (1 - y);
+  if (!(oxygen > 0)) {
+    return fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->subject_at,
+                         "the figure is at a reference oxygen, and the stream states none", NULL);
+  }
+  c->state.oxygen = oxygen;
+  bool done = oxygen_factor (c, v->oxygen, c->what, factor);
+  c->state.oxygen = UNSTATED;
+  return done;
+}
+
 /* The flow of a trace that is within a stream.  A figure of a wet gas says which gas it is of.  */
 static bool
 trace_flow (struct conversion *c)
@@ -456,9 +481,16 @@ trace_flow (struct conversion *c)
                 v->part, v->part);
     return false;
   }
+  double factor;
+  if (!isnan (c->state.oxygen)) {
+    return conversion_mismatch (c, "a reference oxygen belongs to a concentration");
+  }
+  if (!trace_oxygen_of_stream (c, &factor)) {
+    return false;
+  }
   part.kind = VALUE_PART;
   part.flow = v->stream.flow;
-  part.moles = v->si * v->stream.moles;
+  part.moles = factor * v->si * v->stream.moles;
   part.mass = part.moles * v->species.at[0]->molar_mass;
   c->value = &part;
   bool done = convert_part (c);

@@ -183,6 +183,7 @@ part_of (struct evaluation *ev, const struct node *node, const struct state *sta
 
 /* So small a share of a component is more likely meant of the gas.  */
 #define TRACE_SHARE 0.01
+#define TRACE_OF_STREAM 0.001
 
 static bool
 share_of (struct evaluation *ev, const struct node *node, const struct value *share,
@@ -199,6 +200,10 @@ share_of (struct evaluation *ev, const struct node *node, const struct value *sh
     double all = whole->stream.moles;
     const char *unit = moles_unit (whole->stream.flow);
     whole->stream = stream_share (&whole->stream, share->si);
+    if (ev->result && share->unit && share->unit->ratio == RATIO_MOLE
+        && share->si < TRACE_OF_STREAM) {
+      note (ev, MESSAGE_NOTE_SHARE_OF_ALL, share_text (ev->arena, share->si), NULL, NULL);
+    }
     RECORD (ev, .name = "share of", .of = name_of (node->b), .formula = "n = s n_0",
             .value = whole->stream.moles, .unit = unit, .source = STEP_DEFINITION,
             STEP_SYMBOLS (SYMBOL ("s", share->si, "1"), SYMBOL ("n_0", all, unit)));
