@@ -6,6 +6,7 @@
 #include "support/fault.h"
 #include "support/number.h"
 #include "support/text.h"
+#include "units/dimension.h"
 #include "units/unit.h"
 
 /* ---- Cells ---- */
@@ -407,6 +408,13 @@ settle_unit (const struct laboratory *lab, struct spot at,
                                                 : "the file does not say what its figures are "
                                                   "shares of",
                         "say it behind the file's name: mol%, mass% or vol%", fault);
+  bool by_volume = dimension_equal (part->unit->dimension, DIMENSION_DENSITY)
+                   || dimension_equal (part->unit->dimension, DIMENSION_MOLAR_DENSITY);
+  if (by_volume && part->unit->family_power != -1)
+    return complain_at (lab, at.row, at.column, MESSAGE_LABORATORY_UNIT,
+                        arena_format (fault->arena, "%s says nothing without a temperature and a "
+                                      "pressure", part->unit_text),
+                        "count it at reference conditions: mg/Nm3, mg/Sm3", fault);
   bool hundredth = part->unit->ratio != RATIO_NONE
                    && part->unit->factor > 0.0099 && part->unit->factor < 0.0101;
   if ((a->percent || u.percent) && !hundredth)

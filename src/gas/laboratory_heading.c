@@ -82,8 +82,8 @@ slice_text (struct arena *arena, struct slice s)
 
 /* As laboratories write them, squeezed; from memory, no source.  */
 static const char *const names_words[] = {
-  "component", "components", "compound", "compounds", "species", "constituent", "analyte", "gas",
-  "substance", "part", "parts", "komponente", "formula", NULL
+  "component", "components", "componentname", "compound", "compounds", "species", "constituent",
+  "analyte", "gas", "substance", "part", "parts", "komponente", "formula", NULL
 };
 static const char *const sample_words[] = {
   "sample", "samples", "sampleid", "sampleno", "samplenumber", "samplename", "id", "no", "number",
@@ -379,7 +379,8 @@ read_pieces (struct arena *arena, const struct laboratory_words *words, struct s
   return false;
 }
 
-/* A heading of no known name may still say its unit: "S-101 [mol%]".  */
+/* A heading of no known name may still say its unit: "S-101 [mol%]"; one of a known word may have
+   a unit that is no amount's: "temperature [degC]".                                             */
 static void
 read_unknown (struct arena *arena, const struct laboratory_words *words, struct slice s,
               struct heading *h)
@@ -387,8 +388,14 @@ read_unknown (struct arena *arena, const struct laboratory_words *words, struct 
   h->kind = HEADING_UNKNOWN;
   h->name = s;
   for (size_t i = 1; i < s.n; i++) {
-    struct heading tried = *h;
+    struct heading tried = *h, word = *h;
     bool bracket = s.at[i] == '(' || s.at[i] == '[';
+    if (bracket && read_word (words, slice_trimmed ((struct slice) { s.at, i }), &word)
+        && (word.kind == HEADING_OTHER_WORD || word.kind == HEADING_DATE
+            || word.kind == HEADING_TOTAL)) {
+      *h = word;
+      return;
+    }
     if ((bracket || is_blank (s.at[i]))
         && take_words (arena, words, (struct slice) { s.at + i, s.n - i }, &tried)) {
       *h = tried;

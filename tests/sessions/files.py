@@ -146,6 +146,11 @@ BAD = [
      "mol% or those in mass%"),
     ("an uncertainty in another measure", "component,mol%,u [mass%]\nCH4,60,1\nCO2,40,1\n", "",
      "laboratory-unit", "2:8", "uncertainty in mass%"),
+    ("mass per cubic metre of no state", "component,mol%\nCH4,60\nH2S,1200 mg/m3\n", "",
+     "laboratory-unit", "3:5", "mg/Nm3"),
+    ("a row for each component of each sample",
+     "sample,component,mol%\nA,CH4,60\nA,CO2,40\nB,CH4,61\nB,CO2,39\n", "",
+     "laboratory-layout", "1:1", "each sample a row"),
     ("nothing but the rest", "component,mol%\nCH4,rest\nCO2,n/a\n", "", "laboratory-layout",
      "2:1", "no figures"),
     # -- Samples, moisture
@@ -231,6 +236,11 @@ GOOD = [
      "H2S,0.05\nH2O,n/a\n", ""),
     ("not looked for", "component,mol%\nCH4,60.5\nCO2,38.25\nN2,1.2\nH2S,0.05\nC3H8,n/a\nC2H6,-\n"
      "O2,\n", ""),
+    ("an instrument's own table", "Component Name,Retention Time [min],Area,Mole %,Weight %\n"
+     "Methane,1.2,12345,60.5,36\nCarbon dioxide,2.2,1234,38.25,62\nNitrogen,3.1,123,1.2,1\n"
+     "Hydrogen sulfide,4.5,12,0.05,1\nTotal,,,100,100\n", "mol%"),
+    ("a sample named beside its components", "sample,component,mol%\nA,CH4,60.5\nA,CO2,38.25\n"
+     "A,N2,1.2\nA,H2S,0.05\n", ""),
     ("nitrogen as the rest",
      "component,mol%\nCH4,60.5\nCO2,38.25\nN2,balance\nH2S,0.05\n", ""),
     ("uncertainties beside",
@@ -369,7 +379,8 @@ PRACTICE = [
     ("a syngas with nitrogen as balance",
      "component,mol%\nH2,41.20\nCO,23.85\nCO2,19.60\nCH4,8.42\nN2,6.30\n",
      "normalised into N2",
-     [("N2 of lab in mol%", 6.93, 1e-5, None), ("molar mass of lab in g/mol", 19.4289, 3e-5, None)]),
+     [("N2 of lab in mol%", 6.93, 1e-5, None),
+      ("molar mass of lab in g/mol", 19.4289, 3e-5, None)]),
     ("nitrogen by difference", "component,mol%,u\nCH4,62.10,0.30\nCO2,33.40,0.25\nO2,0.55,0.05\n"
      "H2S,0.12,0.01\nN2,by difference,\n", "",
      [("N2 of lab in mol%", 3.83, 1e-5, 0.39383),
@@ -409,7 +420,8 @@ def life(tap):
     got = [a["value"] for thing in things for a in thing.get("answers", [])]
     want = [100 * 60 / 99, 1, 100 * 60 / 61]
     tap.tell([line for g, w in zip(got, want) for line in [session.off(g, w, 1e-12)] if line]
-             or ([] if len(got) == 3 else [str(got)]), "closed by scaling, into N2, and without CO2")
+             or ([] if len(got) == 3 else [str(got)]),
+             "closed by scaling, into N2, and without CO2")
     kept = open("life.gw", encoding="utf-8").read()
     tap.tell([] if 'gas a from "life.csv" normalised into N2\n' in kept else [kept],
              "a saved session has the statement with the path as typed")
@@ -500,7 +512,8 @@ def trends(tap):
     typed = "".join("gas raw%d = CH4 %r, CO2 %r mol%%\n" % (i, *lists[name])
                     for i, name in enumerate("ABCDF"))
     want = {"raw%d" % i: 100 * lists[name][0] / sum(lists[name]) for i, name in enumerate("ABCDF")}
-    tap.tell(compare(trend_of(session.answers(typed + "trend CH4 of raw0 in mol% with raw*")), want),
+    tap.tell(compare(trend_of(session.answers(
+        typed + "trend CH4 of raw0 in mol% with raw*")), want),
              "a trend over gases whose names begin so")
     tap.tell(compare(trend_of(session.answers(
         typed + "trend CH4 of raw3 in mol% with raw0, raw1, raw2, raw3, raw4")), want),
