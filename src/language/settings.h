@@ -62,6 +62,7 @@ struct settings {
   bool parts_independent;                  /* a list with one part moved is not closed again */
   bool constants_uncertain;                /* figures of tables and equations are sources too */
   double coverage;                         /* uncertainties are shown times this */
+  double smallest_effect;                  /* relative: less than that is not listed */
   int digits;
   bool ignore_total;                       /* while a figure is moved by its uncertainty */
   bool bare_is_gauge;                      /* while the gauge reading of bare pressures is tried */

@@ -100,7 +100,7 @@ def settings(tap):
     density = "density of CH4 at 20 degC, 50 bar(a)\n"
     with tempfile.TemporaryDirectory() as folder:
         name = os.path.join(folder, "kept.gw")
-        sets = "set lower flammable limit of H2 4.1 vol%\nset coverage 2\nset constants uncertain\nset parts independent\n"
+        sets = "set smallest effect 0.01 %\nset lower flammable limit of H2 4.1 vol%\nset coverage 2\nset constants uncertain\nset parts independent\n"
         kept = session.answers(sets + 'save "%s"\n' % name + question + density)
         again = session.answers('open "%s"\n' % name + question + density + "set\n"
                                 + 'save "%s2"\n' % name)
@@ -123,7 +123,7 @@ def settings(tap):
     rows = {row["name"]: row["values"] for thing in again if "card" in thing
             for row in thing["card"]["rows"]}
     tap.tell([name for name, value in (("coverage", "2"), ("constants", "uncertain"),
-                                       ("parts", "independent"))
+                                       ("parts", "independent"), ("smallest effect", "0.01 %"))
               if rows.get(name) != [value, "as set"]], "listed")
     back = session.answers("set constants uncertain\nundo\n" + density
                            + "set coverage 3\nset coverage 1\n" + question)
@@ -284,6 +284,18 @@ def trials(tap):
              else repr(exact), "nothing that is uncertain")
 
 
+def effects(tap):
+    """Small effects are counted, not listed, where that is set."""
+    asked = "wobbe of CH4\n"
+    plain, hidden = [session.answers(first + asked)[-1] for first in (
+        "", "set smallest effect 0.2 %\n")]
+    tap.tell("" if len(plain["taken"]) == 2 else repr(plain["taken"]), "all that moves it")
+    tap.tell("" if len(hidden["taken"]) == 1 and "Sm3" in hidden["taken"][0]
+             else repr(hidden["taken"]), "what moves it by 0.2 % or more")
+    tap.tell("" if any(note.endswith("by less than 0.2 %: 1") for note in hidden["notes"])
+             else repr(hidden["notes"]), "how many are left out")
+
+
 def cards(tap):
     """The card of an uncertain gas has the uncertainties of its lines, others have none."""
     gas = ("gas g = CH4 62.10 +/- 0.30, CO2 33.40 +/- 0.25, O2 0.55 +/- 0.05, H2S 0.12 +/- 0.01, "
@@ -302,6 +314,7 @@ def cards(tap):
 def main():
     tap = session.Tap()
     cards(tap)
+    effects(tap)
     standard(tap)
     settings(tap)
     another_library(tap)

@@ -167,6 +167,8 @@ setting_value (struct arena *arena, const struct settings *s, enum setting setti
     return s->constants_uncertain ? "uncertain" : "exact";
   case SETTING_COVERAGE:
     return arena_format (arena, "%.9g", s->coverage);
+  case SETTING_SMALLEST_EFFECT:
+    return arena_format (arena, "%s %%", figure_text (arena, s->smallest_effect * 100));
   case SETTING_DIGITS:
     return arena_format (arena, "%d", s->digits);
   case SETTING_COUNT:

@@ -40,6 +40,7 @@ touch_of (enum setting setting)
   case SETTING_PARTS:
   case SETTING_CONSTANTS:
   case SETTING_COVERAGE:
+  case SETTING_SMALLEST_EFFECT:
   case SETTING_DIGITS:
   case SETTING_COUNT: break;
   }
@@ -114,6 +115,7 @@ set_words (const struct statement *s, struct settings *new, struct fault *fault)
   case SETTING_COMBUSTION:
   case SETTING_LOWER_FLAMMABLE_LIMIT:
   case SETTING_COVERAGE:
+  case SETTING_SMALLEST_EFFECT:
   case SETTING_DIGITS:
   case SETTING_COUNT:
     break;
@@ -190,6 +192,11 @@ set_figure (struct session *session, const struct statement *s, struct settings 
     new->coverage = v.si;
     new->is_set[s->setting] = v.si > 1;
     return true;
+  case SETTING_SMALLEST_EFFECT:
+    new->smallest_effect = v.si;
+    new->is_set[s->setting] = v.si > 0;
+    return (v.si >= 0 && v.si <= 0.1)
+           || out_of_range (s, fault, "the smallest effect lies between 0 and 10 %");
   case SETTING_DIGITS:
     new->digits = (int) v.si;
     return true;

@@ -133,7 +133,8 @@ effect_of (const struct evaluation *ev, const struct statement *s, const struct 
 /* Below this an alternative does not move the figure in any digit that is shown.  */
 #define NO_EFFECT 5e-8
 
-static void
+/* Adds what was taken; false if it moves the figures by less than is to be listed.  */
+static bool
 tell_assumption (struct evaluation *ev, const struct statement *s, const struct figures *figures,
                  const struct assumption *a)
 {
@@ -142,7 +143,10 @@ tell_assumption (struct evaluation *ev, const struct statement *s, const struct 
   if (other_of (ev->arena, a, &other)) {
     effect = effect_of (ev, s, figures, &other);
     if (fabs (effect) < NO_EFFECT) {
-      return;
+      return true;
+    }
+    if (other.name && fabs (effect) < ev->settings->smallest_effect) {
+      return false;
     }
   }
   struct remark *remark = result_remark (ev->result, a->kind, a->fact[0], a->fact[1]);
@@ -150,6 +154,7 @@ tell_assumption (struct evaluation *ev, const struct statement *s, const struct 
   remark->fact[3] = a->fact[3];
   remark->alternative = other.name;
   remark->effect = other.name ? effect : UNSTATED;
+  return true;
 }
 
 /* Where something was below a detection limit: the figures between which each one lies.  */
@@ -262,8 +267,14 @@ void
 question_tell_taken (struct evaluation *ev, const struct statement *s,
                      const struct figures *figures)
 {
+  size_t hidden = 0;
   for (size_t i = 0; i < ev->assumption_count; i++) {
-    tell_assumption (ev, s, figures, &ev->assumptions[i]);
+    hidden += !tell_assumption (ev, s, figures, &ev->assumptions[i]);
+  }
+  if (hidden > 0) {
+    result_remark (ev->result, MESSAGE_NOTE_EFFECTS_HIDDEN,
+                   arena_format (ev->arena, "%zu", hidden),
+                   figure_text (ev->arena, 100 * ev->settings->smallest_effect));
   }
   result_sort_taken (ev->result);
 }

@@ -4,7 +4,7 @@
 static const char SETTINGS[] =
   "settings: below detection, calorific values, combustion, constants, coverage, digits, gas model,"
   " lower flammable limit, oxygen in air, parts, reference volumes, site altitude, site pressure,"
-  " total tolerance; or a reference unit: set scf at T, P";
+  " smallest effect, total tolerance; or a reference unit: set scf at T, P";
 
 /* What a setting of words may be set to; null last.  */
 static const char *const gas_models[] = { "auto", "ideal", "Peng-Robinson", "GERG-2008",
@@ -76,7 +76,7 @@ figure_fits (enum setting setting, const struct node *figure)
     return dimension_equal (unit->dimension, DIMENSION_LENGTH);
   if (setting == SETTING_OXYGEN_IN_AIR || setting == SETTING_LOWER_FLAMMABLE_LIMIT)
     return unit->ratio == RATIO_MOLE || unit->ratio == RATIO_VOLUME;
-  if (setting == SETTING_TOTAL_TOLERANCE)
+  if (setting == SETTING_TOTAL_TOLERANCE || setting == SETTING_SMALLEST_EFFECT)
     return unit->ratio == RATIO_PLAIN || unit->ratio == RATIO_MOLE;
   return unit_is_temperature (unit);      /* of combustion */
 }
@@ -132,7 +132,8 @@ parse_setting (struct parser *p, struct statement *statement)
   case SETTING_COMBUSTION:
     return expect_word (p, "at", "set combustion at 25 degC") && parse_figure (p, statement);
   case SETTING_SITE_PRESSURE: case SETTING_SITE_ALTITUDE: case SETTING_OXYGEN_IN_AIR:
-  case SETTING_TOTAL_TOLERANCE: case SETTING_COVERAGE: case SETTING_DIGITS: case SETTING_COUNT:
+  case SETTING_TOTAL_TOLERANCE: case SETTING_COVERAGE: case SETTING_SMALLEST_EFFECT:
+  case SETTING_DIGITS: case SETTING_COUNT:
   default:
     return parse_figure (p, statement);
   }
