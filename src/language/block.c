@@ -157,6 +157,53 @@ block_add (struct session *session, const struct statement *s, struct fault *fau
   return true;
 }
 
+/* The streams the balance made so far go with it, but for those that others lean on.  */
+void
+balance_drop_made (struct session *session, const char *balance)
+{
+  for (size_t i = session->count; i-- > 0;) {
+    struct definition *d = session->order[i], **leaning;
+    if (!d->maker || strcmp (d->maker, balance) != 0) {
+      continue;
+    }
+    struct arena *arena = arena_create ();
+    if (names_leaning (session, arena, d->name, &leaning) == 0) {
+      size_t place = name_place (session, d->name, NULL, 0);
+      undo_note (session, d->name, d, NULL, place, NULL);
+      definition_release (d);
+    }
+    arena_destroy (arena);
+  }
+}
+
+void
+balance_remember (struct session *session, const char *name)
+{
+  char *copy = memory_get (strlen (name) + 1, 1);
+  memcpy (copy, name, strlen (name) + 1);
+  memory_release (session->last_balance);
+  session->last_balance = copy;
+}
+
+static bool
+close_balance (struct session *session, const struct statement *end, struct result *result,
+               struct fault *fault)
+{
+  struct open_block *b = &session->block;
+  struct statement from = { .kind = STATEMENT_BALANCE, .name = b->name, .name_at = b->name_at,
+                            .source = b->line[0], .at = b->at[0] };
+  const char *source = block_source (b, end, fault->arena);
+  undo_group_open (session);
+  balance_drop_made (session, b->name);
+  if (!name_define (session, &from, source, NAME_BALANCE, result, fault)) {
+    undo_group_drop (session);
+    return false;
+  }
+  undo_group_close (session);
+  balance_remember (session, b->name);
+  return true;
+}
+
 bool
 block_close (struct session *session, const struct statement *end, struct result *result,
              struct fault *fault)
@@ -169,6 +216,11 @@ block_close (struct session *session, const struct statement *end, struct result
   if (b->spoilt) {
     fault_set_at (fault, MESSAGE_BLOCK_SPOILT, end->at, arena_string (fault->arena, b->name),
                   NULL);
+  } else if (b->kind == BLOCK_BALANCE) {
+    done = close_balance (session, end, result, fault);
+    if (!done && !fault->quote) {
+      quote_line (b, 0, fault);
+    }
   } else {
     struct statement from = { .kind = STATEMENT_SHEET, .name = b->name, .name_at = b->name_at,
                               .source = b->line[0], .at = b->at[0] };

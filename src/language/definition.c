@@ -5,6 +5,7 @@
 #include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/balance/plant.h"
 #include "language/check/sheet.h"
 #include "language/evaluate/record.h"
 #include "language/evaluate/wording.h"
@@ -295,6 +296,9 @@ body (struct evaluation *ev, const struct definition *d, struct value *out, stru
 {
   bool done = false;
   ev->subject = d->name;
+  if (d->maker) {
+    return made_body (ev, d, out);
+  }
   switch (d->kind) {
   case NAME_GAS:
     done = gas_body (ev, d->statement, out);
@@ -312,6 +316,10 @@ body (struct evaluation *ev, const struct definition *d, struct value *out, stru
     *out = value_number (UNSTATED);
     done = sheet_holds (ev, d->statement);
     break;
+  case NAME_BALANCE:
+    *out = value_number (UNSTATED);
+    out->plant = plant_make (ev, d->statement, d->fresh ? d->value.plant : NULL);
+    return out->plant != NULL;
   }
   if (!done && d->statement->value) {
     fault_place (ev->fault, d->statement->value->at);
@@ -337,6 +345,7 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
   struct state state;
   arena_reset (d->cache);
   d->fresh = false;
+  d->value.plant = NULL;
   result_init (&notes, d->cache, d->source);
   evaluation_init (&ev, session, &notes, fault);
   ev.arena = d->cache;
@@ -351,6 +360,8 @@ definition_refresh (struct session *session, struct definition *d, struct fault 
   }
   if (d->kind == NAME_GAS && value.gas->closed) {
     caution_gas (session, &notes, value.gas->closed, d->name);
+  } else if (d->kind == NAME_STREAM && d->maker) {
+    caution_gas (session, &notes, value.stream.gas, d->name);
   } else if (d->kind == NAME_STREAM && tree_new_gas (d->statement->value)) {
     caution_gas (session, &notes, value.stream.gas, d->name);
   }
@@ -539,7 +550,8 @@ definition_tell (struct session *session, struct definition *d, bool all, struct
   tell (result, d->cautions);
   for (size_t i = 0; i < d->need_count; i++) {
     struct definition *need = name_find (session, d->needs[i], strlen (d->needs[i]));
-    if (need && need != d && need->fresh) {
+    bool own = need && need->maker && strcmp (need->maker, d->name) == 0;
+    if (need && need != d && !own && need->fresh) {
       definition_tell (session, need, all, result);
     }
   }

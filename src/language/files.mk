@@ -1,6 +1,23 @@
 noinst_LIBRARIES += %D%/liblanguage.a
 
 %C%_liblanguage_a_SOURCES = \
+  %D%/balance/made.c \
+  %D%/balance/plant.c \
+  %D%/balance/plant.h \
+  %D%/balance/plant_fact.c \
+  %D%/balance/plant_figure.c \
+  %D%/balance/plant_names.c \
+  %D%/balance/plant_network.c \
+  %D%/balance/plant_private.h \
+  %D%/balance/plant_reading.c \
+  %D%/balance/plant_spread.c \
+  %D%/balance/verdict.c \
+  %D%/balance/verdict_around.c \
+  %D%/balance/verdict_clash.c \
+  %D%/balance/verdict_open.c \
+  %D%/balance/verdict_private.h \
+  %D%/balance/verdict_reconciled.c \
+  %D%/balance/verdict_streams.c \
   %D%/block.c \
   %D%/check/candidates.c \
   %D%/check/hold.c \
@@ -14,6 +31,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/check/sheet.h \
   %D%/check/trial.c \
   %D%/check/trial.h \
+  %D%/commands/card_balance.c \
   %D%/commands/card_gas.c \
   %D%/commands/card_stream.c \
   %D%/commands/card_table.c \
@@ -28,6 +46,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/commands/save.c \
   %D%/commands/set.c \
   %D%/commands/show.c \
+  %D%/commands/solve.c \
   %D%/commands/trend.c \
   %D%/commands/trim.c \
   %D%/commands/trim.h \

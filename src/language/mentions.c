@@ -74,12 +74,19 @@ tree_new_gas (const struct node *node)
 
 /* ---- Who leans on whom ---- */
 
+/* A balance does not lean on the streams it makes itself.  */
 static bool
-mentions (const struct definition *d, const char *name)
+is_own (const struct definition *d, const struct definition *need)
+{
+  return d->kind == NAME_BALANCE && need && need->maker && strcmp (need->maker, d->name) == 0;
+}
+
+static bool
+mentions (const struct session *s, const struct definition *d, const char *name)
 {
   for (size_t i = 0; i < d->need_count; i++)
     if (strcmp (d->needs[i], name) == 0) {
-      return true;
+      return !is_own (d, name_find (s, name, strlen (name)));
     }
   return false;
 }
@@ -92,10 +99,10 @@ leans (const struct session *s, struct definition *d, const char *name, unsigned
     return d->leans;
   }
   d->looked = look;
-  d->leans = mentions (d, name);
+  d->leans = mentions (s, d, name);
   for (size_t i = 0; !d->leans && i < d->need_count; i++) {
     struct definition *need = name_find (s, d->needs[i], strlen (d->needs[i]));
-    d->leans = need && need != d && leans (s, need, name, look);
+    d->leans = need && need != d && !is_own (d, need) && leans (s, need, name, look);
   }
   return d->leans;
 }

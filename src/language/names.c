@@ -188,7 +188,8 @@ not_circular (struct session *s, const struct statement *from, struct fault *fau
   struct definition **leaning;
   size_t n = names_leaning (s, fault->arena, from->name, &leaning);
   for (size_t i = 0; i < n; i++) {
-    const struct node *use = tree_mention (from, leaning[i]->name);
+    bool made = leaning[i]->maker && strcmp (leaning[i]->maker, from->name) == 0;
+    const struct node *use = made ? NULL : tree_mention (from, leaning[i]->name);
     if (use) {
       return fault_set_at (fault, MESSAGE_SELF_REFERENCE, use->at, from->name,
                            "what it mentions leans on it already");
@@ -200,7 +201,8 @@ not_circular (struct session *s, const struct statement *from, struct fault *fau
 static const char *
 kind_name (enum name_kind kind)
 {
-  static const char *const names[] = { "gas", "stream", "quantity", "state", "sheet" };
+  static const char *const names[] = { "gas", "stream", "quantity", "state", "sheet",
+                                       "balance" };
   return names[kind];
 }
 
@@ -214,7 +216,8 @@ dependents_hold (struct session *s, const struct statement *from, enum name_kind
   for (size_t i = 0; i < n; i++) {
     struct fault inside;
     fault_init (&inside, fault->arena);
-    if (!definition_refresh (s, leaning[i], &inside)) {
+    /* A stream of a balance says where it is used that it is no longer fixed.  */
+    if (!definition_refresh (s, leaning[i], &inside) && !leaning[i]->maker) {
       struct text why;
       text_init (&why);
       message_write (&why, message_sentence (inside.kind), inside.fact);
@@ -234,7 +237,7 @@ static void
 shift_place (struct session *s, struct fault *fault, const struct statement *from,
              const char *source)
 {
-  if (from->kind == STATEMENT_SHEET) {
+  if (from->kind == STATEMENT_SHEET || from->kind == STATEMENT_BALANCE) {
     block_place (s, fault);
     return;
   }
@@ -310,12 +313,19 @@ is_listed (const struct node *names, const char *name)
 }
 
 static bool
+is_made_by (const struct definition *d, const char *balance)
+{
+  return d->maker && strcmp (d->maker, balance) == 0;
+}
+
+static bool
 nobody_else_needs (struct session *s, const struct node *names, const struct node *name,
                    struct fault *fault)
 {
   const char *users = NULL;
   for (size_t i = 0; i < s->count; i++)
-    if (!is_listed (names, s->order[i]->name) && definition_leans (s, s->order[i], name->text)) {
+    if (!is_listed (names, s->order[i]->name) && !is_made_by (s->order[i], name->text)
+        && definition_leans (s, s->order[i], name->text)) {
       users = users ? arena_format (fault->arena, "%s, %s", users, s->order[i]->name)
                     : s->order[i]->name;
     }
@@ -341,6 +351,9 @@ name_forget (struct session *s, const struct node *names, struct fault *fault)
   undo_group_open (s);
   for (const struct node *n = names; n; n = n->next) {
     struct definition *d = name_find (s, n->text, strlen (n->text));
+    if (d && d->kind == NAME_BALANCE) {
+      balance_drop_made (s, n->text);
+    }
     if (d) {
       size_t place = name_place (s, n->text, NULL, 0);
       undo_note (s, d->name, d, NULL, place, NULL);

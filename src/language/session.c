@@ -74,6 +74,7 @@ session_destroy (struct session *s)
   }
   block_drop (s);
   kept_destroy (s);
+  memory_release (s->last_balance);
   undo_clear (s);
   names_clear (s);
   if (s->references) {

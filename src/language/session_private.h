@@ -12,7 +12,8 @@
 struct calorific_tables; struct composition; struct kept; struct map; struct property_tables;
 struct readings; struct reference_table; struct remark; struct result; struct species; struct step;
 
-enum name_kind { NAME_GAS, NAME_STREAM, NAME_QUANTITY, NAME_REFERENCE, NAME_SHEET };
+enum name_kind { NAME_GAS, NAME_STREAM, NAME_QUANTITY, NAME_REFERENCE, NAME_SHEET,
+                 NAME_BALANCE };
 
 /* A name and its formula.  The tree was parsed from `source` into the definition's own arena and
    is never changed; a redefinition makes another definition.  What it came to is kept until a
@@ -25,6 +26,7 @@ struct definition {
   const char *const *needs;                /* the user's names it mentions */
   size_t need_count;
   unsigned holders;                        /* session and undo log */
+  const char *maker;                       /* the balance that made the stream; null: typed */
 
   bool fresh;                              /* the cache holds */
   unsigned long looked;                    /* the last search that came by, and what it found */
@@ -70,6 +72,7 @@ struct open_block {
 struct session {
   struct session_options options;
   struct open_block block;
+  char *last_balance;                      /* what a bare `solve` solves; or null */
   struct vocabulary vocabulary;
   struct reference_table *references;
   const struct species *water, *oxygen;
@@ -110,6 +113,11 @@ const struct value *definition_value (struct evaluation *, struct definition *,
                                       struct place at) MUST_CHECK;
 const struct state *definition_state (struct evaluation *, struct definition *,
                                       struct place at) MUST_CHECK;
+/* A stream (or, of a balance of whole flows, a quantity) made by BALANCE, and what it comes to
+   (balance/made.c).                                                                             */
+struct definition *definition_made (const char *name, const char *balance,
+                                    enum name_kind) MUST_CHECK;
+bool made_body (struct evaluation *, const struct definition *, struct value *) MUST_CHECK;
 /* Adds the notes and cautions of a definition, and of those it needs, that have not stood under
    an answer yet (ALL: even those that have).                                                    */
 void definition_tell (struct session *, struct definition *, bool all, struct result *);
@@ -183,6 +191,10 @@ bool block_add (struct session *, const struct statement *, struct fault *) MUST
 bool block_close (struct session *, const struct statement *end, struct result *,
                   struct fault *) MUST_CHECK;
 void block_drop (struct session *);
+/* The streams a balance made go, but for those that others lean on.  */
+void balance_drop_made (struct session *, const char *balance);
+/* The balance that a bare `solve` means from now on.  */
+void balance_remember (struct session *, const char *name);
 /* A place counted in the source of the open block, counted where the line was typed.  */
 void block_place (const struct session *, struct fault *);
 

@@ -122,7 +122,8 @@ enum statement_kind {
 #undef STATEMENT
   /* Lines of a block.  */
   STATEMENT_MIX, STATEMENT_SEPARATE, STATEMENT_SPLIT, STATEMENT_REACT, STATEMENT_COMPONENTS,
-  STATEMENT_KNOWN, STATEMENT_FIGURE, STATEMENT_END,
+  STATEMENT_KNOWN, STATEMENT_ABSENT, STATEMENT_PER, STATEMENT_AROUND, STATEMENT_FIGURE,
+  STATEMENT_END,
   STATEMENT_EMPTY                 /* never made by the parser, which passes comments over */
 };
 
@@ -166,8 +167,10 @@ struct statement {
   const struct node *claim;
   size_t trials; unsigned long seed;             /* montecarlo, an ASK; 0: an answer by itself */
   const struct aim *aims; enum optimum optimum; const struct node *least;
-  /* boundaries */
+  /* boundaries; a reaction is a NODE_LIST of NODE_NAMEs, `number` their coefficients, below 0
+     what is used up */
   const struct node *inlets, *outlets;
+  struct node *reactions;
   struct statement *next;         /* of a block: the line behind this one */
 };
 

@@ -23,5 +23,6 @@ noinst_LIBRARIES += %D%/libreport.a
   %D%/style.c \
   %D%/text.c \
   %D%/trend.c \
+  %D%/verdict.c \
   %D%/workings.c \
   %D%/workings_machine.c

@@ -420,6 +420,10 @@ report_json (struct text *out, const struct result *result)
     trend_add (out, result->trend);
   if (result->workings != NULL)
     report_workings_json (out, result->workings);
+  if (result->balance != NULL) {
+    text_add (out, ",\"balance\":");
+    report_verdict_json (out, result->balance);
+  }
   remarks_add (out, ",\"taken\":", result->taken);
   remarks_add (out, ",\"notes\":", result->notes);
   remarks_add (out, ",\"cautions\":", result->cautions);

@@ -12,8 +12,8 @@
 #include "report/report.h"
 #include "support/text.h"
 
-struct card; struct fault; struct help_page; struct remark; struct report_origin; struct result;
-struct step; struct trend; struct workings_record;
+struct balance_verdict; struct card; struct fault; struct help_page; struct remark;
+struct report_origin; struct result; struct step; struct trend; struct workings_record;
 
 /* Columns of the text form, counted from 0.  Columns 0 to 5 are the margin: a mark stands in
    column 2, a word of help in columns 0 to 2; all text begins in column 6.                      */
@@ -78,6 +78,9 @@ void fault_words_clear (struct fault_words *);
 void report_text (struct text *, const struct report_style *, const struct result *);
 void report_json (struct text *, const struct result *);
 void report_csv (struct text *, const struct result *, bool first);
+/* The verdict on a balance, and its object in JSON.  */
+void report_verdict (struct text *, const struct report_style *, const struct balance_verdict *);
+void report_verdict_json (struct text *, const struct balance_verdict *);
 /* The verdict of a check, with the computed figure.  */
 void report_check (struct text *, const struct report_style *, const struct result *);
 void report_trend (struct text *, const struct report_style *, const struct trend *);

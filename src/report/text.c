@@ -283,6 +283,8 @@ report_text (struct text *out, const struct report_style *style, const struct re
     report_check (out, style, result);
   else if (result->answers != NULL)
     answers_add (out, style, result);
+  if (result->balance != NULL)
+    report_verdict (out, style, result->balance);
   for (const struct card *c = result->cards; c != NULL; c = c->next)
     report_card (out, style, c);
   if (result->trend != NULL)

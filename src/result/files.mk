@@ -1,6 +1,7 @@
 noinst_LIBRARIES += %D%/libresult.a
 
 %C%_libresult_a_SOURCES = \
+  %D%/balance_verdict.h \
   %D%/chart.h \
   %D%/check_verdict.h \
   %D%/result.c \

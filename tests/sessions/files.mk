@@ -1,6 +1,7 @@
 # Whole sessions through the program, read back by scripts in Python that speak TAP themselves.
 EXTRA_DIST += \
   %D%/bad \
+  %D%/balance_cases \
   %D%/contract.gw \
   %D%/quarrels.tsv \
   %D%/scenarios \
@@ -13,6 +14,7 @@ TESTS += $(session_tests)
 session_tests = \
   %D%/air.sh \
   %D%/bad.sh \
+  %D%/balances.sh \
   %D%/claims.sh \
   %D%/contract.sh \
   %D%/energy.sh \

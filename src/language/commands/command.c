@@ -14,18 +14,11 @@ static const char *const statement_word[] = {
 
 /* Statements of the language that this version reads and does not run.  */
 static bool
-only_read (struct session *session, const struct statement *s, struct fault *fault)
+only_read (const struct statement *s, struct fault *fault)
 {
-  if (s->kind == STATEMENT_SOLVE && s->name && !name_find (session, s->name, strlen (s->name))) {
-    struct evaluation ev;
-    struct node name = { .kind = NODE_NAME, .text = s->name, .at = s->name_at };
-    evaluation_init (&ev, session, NULL, fault);
-    return name_unknown (&ev, &name);
-  }
   bool named = s->kind < sizeof statement_word / sizeof statement_word[0];
-  fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->at,
-                named ? statement_word[s->kind] : "balances", NULL);
-  return false;
+  return fault_set_at (fault, MESSAGE_NOT_AVAILABLE, s->at,
+                       named ? statement_word[s->kind] : "such lines", NULL);
 }
 
 static bool
@@ -68,7 +61,19 @@ command_run (struct session *session, const struct statement *s, struct result *
   case STATEMENT_CHECK:
     return command_check (session, s, result, fault);
   case STATEMENT_SHEET:
+  case STATEMENT_BALANCE:
     return block_open (session, s, fault);
+  case STATEMENT_SOLVE:
+    return command_solve (session, s, result, fault);
+  case STATEMENT_MIX:
+  case STATEMENT_SEPARATE:
+  case STATEMENT_SPLIT:
+  case STATEMENT_REACT:
+  case STATEMENT_COMPONENTS:
+  case STATEMENT_KNOWN:
+  case STATEMENT_ABSENT:
+  case STATEMENT_PER:
+  case STATEMENT_AROUND:
   case STATEMENT_FIGURE:
     return block_add (session, s, fault);
   case STATEMENT_END:
@@ -83,16 +88,8 @@ command_run (struct session *session, const struct statement *s, struct result *
     return true;
   case STATEMENT_ASK:
   case STATEMENT_MONTECARLO:
-  case STATEMENT_BALANCE:
-  case STATEMENT_SOLVE:
   case STATEMENT_NOTE:
-  case STATEMENT_MIX:
-  case STATEMENT_SEPARATE:
-  case STATEMENT_SPLIT:
-  case STATEMENT_REACT:
-  case STATEMENT_COMPONENTS:
-  case STATEMENT_KNOWN:
     break;
   }
-  return only_read (session, s, fault);
+  return only_read (s, fault);
 }

@@ -21,7 +21,7 @@ bool command_run (struct session *, const struct statement *, struct result *, s
 
 command command_check, command_define, command_normalise, command_set, command_show, command_list,
   command_forget, command_trim, command_trend, command_samples, command_save,
-  command_open, command_help, command_undo, command_workings;
+  command_open, command_help, command_undo, command_solve, command_workings;
 
 /* The cards of `show` (card_*.c).  */
 bool card_of_gas (struct session *, const struct gas_value *, const char *name,
@@ -36,6 +36,7 @@ bool card_of_unit (struct session *, const struct unit *, struct result *, struc
 void card_of_reference (struct session *, const struct reference *, struct result *);
 void card_of_state (struct session *, const struct definition *, struct result *);
 void card_of_sheet (const struct definition *, struct result *);
+void card_of_balance (const struct definition *, struct result *);
 void card_of_property (struct session *, enum property, struct result *);
 /* All settings, or only ONE.  */
 void card_of_settings (struct session *, const enum setting *one, struct result *);

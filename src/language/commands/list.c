@@ -34,15 +34,24 @@ static const char *
 kind_word (enum name_kind kind)
 {
   static const char *const words[] = { "gas", "stream", "quantity", "reference conditions",
-                                       "sheet" };
+                                       "sheet", "balance" };
   return words[kind];
 }
 
-/* The lines of a block behind each other.  */
+/* The statement; of a balance its first line and how many follow, of a sheet its lines behind
+   each other.                                                                                   */
 static const char *
-one_line (struct arena *arena, const char *source)
+listed_source (struct arena *arena, const struct definition *d)
 {
-  char *line = arena_string (arena, source);
+  size_t lines = 0;
+  for (const struct statement *line = d->statement->next; line; line = line->next) {
+    lines += line->kind != STATEMENT_END ? 1 : 0;
+  }
+  if (d->kind == NAME_BALANCE) {
+    return arena_format (arena, "%s, %zu line%s", d->statement->source, lines,
+                         lines == 1 ? "" : "s");
+  }
+  char *line = arena_string (arena, d->source);
   for (char *s = line; *s; s++) {
     *s = *s == '\n' ? ' ' : *s;
   }
@@ -61,7 +70,7 @@ list_names (struct session *s, const enum name_kind *only, struct result *result
     if (!only || s->order[i]->kind == *only) {
       struct cell *cells = add_text_row (result, card, s->order[i]->name,
                                          kind_word (s->order[i]->kind));
-      cells[1].text = one_line (result->arena, s->order[i]->source);
+      cells[1].text = listed_source (result->arena, s->order[i]);
     }
   if (n == 0) {
     card_add_line (result, card, "nothing is defined yet: help gas, help stream");
@@ -206,17 +215,14 @@ bool
 command_list (struct session *session, const struct statement *s, struct result *result,
               struct fault *fault)
 {
-  static const char *const own[] = { "gases", "streams", "quantities" };
+  static const char *const own[] = { "gases", "streams", "quantities", NULL, "sheets",
+                                     "balances" };
   if (!s->name) {
     list_names (session, NULL, result);
     return true;
   }
-  if (strcmp (s->name, "sheets") == 0) {
-    list_names (session, &(enum name_kind) { NAME_SHEET }, result);
-    return true;
-  }
-  for (enum name_kind kind = NAME_GAS; kind <= NAME_QUANTITY; kind++)
-    if (strcmp (s->name, own[kind]) == 0) {
+  for (enum name_kind kind = NAME_GAS; kind <= NAME_BALANCE; kind++)
+    if (own[kind] && strcmp (s->name, own[kind]) == 0) {
       list_names (session, &kind, result);
       return true;
     }
@@ -232,8 +238,8 @@ command_list (struct session *session, const struct statement *s, struct result 
     card_of_settings (session, NULL, result);
   } else {
     return fault_set_at (fault, MESSAGE_NAME_UNKNOWN, s->name_at, s->name,
-                         "list, or list gases, streams, quantities, units, components, references, "
-                         "properties, settings");
+                         "list, or list gases, streams, quantities, sheets, balances, units, "
+                         "components, references, properties, settings");
   }
   return true;
 }

@@ -28,6 +28,26 @@ add_statement (struct text *out, const char *source)
   text_add_char (out, '\n');
 }
 
+/* A balance line by line, and solved if it was, so that its streams are there for what follows.  */
+static void
+add_block (const struct session *s, const struct definition *d, struct text *out)
+{
+  const struct statement *line = d->statement;
+  bool solved = false;
+  for (; line && line->kind != STATEMENT_END; line = line->next) {
+    text_add (out, line == d->statement ? "" : "  ");
+    add_statement (out, line->source);
+  }
+  text_add (out, "end\n");
+  for (size_t i = 0; i < s->count && !solved; i++) {
+    solved = s->order[i]->maker && strcmp (s->order[i]->maker, d->name) == 0;
+  }
+  if (solved) {
+    text_add_format (out, "solve %s\n",
+                     d->statement->source + strcspn (d->statement->source, " ") + 1);
+  }
+}
+
 /* A definition behind those it needs.  WRITTEN marks the ones done.  */
 static void
 add_definition (const struct session *s, size_t i, bool written[], struct text *out)
@@ -39,7 +59,11 @@ add_definition (const struct session *s, size_t i, bool written[], struct text *
       if (strcmp (s->order[k]->name, d->needs[n]) == 0) {
         add_definition (s, k, written, out);
       }
-  add_statement (out, d->source);
+  if (d->kind == NAME_BALANCE) {
+    add_block (s, d, out);
+  } else if (!d->maker) {
+    add_statement (out, d->source);
+  }
 }
 
 /* A session as plain statements, settings first, in an order that can be run again.  */

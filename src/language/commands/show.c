@@ -34,6 +34,9 @@ show_definition (struct session *session, const struct statement *s, struct defi
   case NAME_SHEET:
     card_of_sheet (d, result);
     return true;
+  case NAME_BALANCE:
+    card_of_balance (d, result);
+    return true;
   }
   return false;
 }

@@ -175,6 +175,12 @@ defined_name (struct evaluation *ev, struct definition *definition, const struct
     fault_hint (ev->fault, "check %s", node->text);
     return false;
   }
+  if (definition->kind == NAME_BALANCE) {
+    fault_set_at (ev->fault, MESSAGE_KIND_WRONG, node->at,
+                  arena_format (ev->arena, "'%s' is a balance, not a figure", node->text), NULL);
+    fault_hint (ev->fault, "solve %s", node->text);
+    return false;
+  }
   const struct value *value = definition_value (ev, definition, node->at);
   if (!value) {
     return false;

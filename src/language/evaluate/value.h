@@ -13,7 +13,7 @@
 #include "units/dimension.h"
 #include "units/unit.h"
 
-struct analysis; struct composition; struct node; struct species;
+struct analysis; struct composition; struct node; struct plant; struct species;
 
 /* A figure nobody stated; clang wants the cast.  */
 #define UNSTATED ((double) NAN)
@@ -79,6 +79,7 @@ struct value {
   enum standard by;                        /* CALORIFIC */
   double upper;                            /* LIMITS: the second; `si` is the first */
   const struct value *top, *bottom;        /* RATIO: of what */
+  const struct plant *plant;               /* of a balance, which no expression can mean */
   double oxygen;                           /* TRACE: reference oxygen of its figure; else NAN */
 };
 

@@ -3,6 +3,9 @@
 
 static const char BOUNDARY[] = "mix NAME: what goes in = what comes out";
 static const char KNOWN[] = "known WHAT = FIGURE";
+static const char REACTION[] = "react NAME: ... = ... with CH4 + 2 O2 = CO2 + 2 H2O";
+static const char OPENERS[] = "inside a balance a line opens with mix, separate, split, components,"
+                              " known or end";
 static const char CLAIM[] = "a stated figure is a number with its unit";
 
 struct node *
@@ -39,10 +42,54 @@ parse_flows (struct parser *p)
   return last != NULL ? first : NULL;
 }
 
+/* [ NUMBER ] NAME { "+" [ NUMBER ] NAME }: one side of a reaction, its figures times SIGN behind
+   the last of ITEMS.                                                                            */
+static bool
+parse_side (struct parser *p, struct node ***items, double sign)
+{
+  do {
+    double number = 1;
+    const char *figure;
+    struct place at = p->token.at;
+    if (at_number (p) && !parse_bare_number (p, &number, &figure))
+      return false;
+    if (!(number > 0))
+      return fail (p, MESSAGE_WORD_UNEXPECTED, at, "0", REACTION);
+    struct node *name = parse_name (p, REACTION);
+    if (name == NULL)
+      return false;
+    name->number = sign * number;
+    **items = name;
+    *items = &name->next;
+  } while (accept (p, TOKEN_PLUS));
+  return true;
+}
+
+/* side "=" side { "," side "=" side }  */
+static bool
+parse_reactions (struct parser *p, struct statement *statement)
+{
+  struct node **last = &statement->reactions;
+  do {
+    struct node *reaction = node_new (p, NODE_LIST, p->token.at);
+    struct node **items = &reaction->items;
+    if (!parse_side (p, &items, -1))
+      return false;
+    if (!accept (p, TOKEN_EQUALS))
+      return fail_unexpected (p, REACTION);
+    if (!parse_side (p, &items, 1))
+      return false;
+    node_close (p, reaction);
+    *last = reaction;
+    last = &reaction->next;
+  } while (accept_comma (p));
+  return expect_end (p, REACTION);
+}
+
 static bool
 parse_boundary (struct parser *p, struct statement *statement)
 {
-  /* NAME ":" NAME { "+" NAME } "=" NAME { "+" NAME }  */
+  /* NAME ":" NAME { "+" NAME } "=" NAME { "+" NAME } [ "with" reaction { "," reaction } ]  */
   if (!parse_new_name (p, &statement->name, &statement->name_at))
     return false;
   if (!accept (p, TOKEN_COLON))
@@ -54,15 +101,81 @@ parse_boundary (struct parser *p, struct statement *statement)
     return fail_unexpected (p, p->token.kind == TOKEN_MINUS ? other_side : BOUNDARY);
   if ((statement->outlets = parse_flows (p)) == NULL)
     return false;
+  if (statement->kind == STATEMENT_REACT && at_end (p))
+    return fail (p, MESSAGE_BLOCK_LINE, p->first.at, "react", OPENERS);
+  if (statement->kind == STATEMENT_REACT && accept_word (p, "with"))
+    return parse_reactions (p, statement);
   return expect_end (p, p->token.kind == TOKEN_MINUS ? other_side : BOUNDARY);
+}
+
+/* "conversion" "of" NAME "in" NAME  */
+static struct node *
+parse_conversion (struct parser *p)
+{
+  const char *form = "known conversion of CH4 in NAME = 97 %";
+  struct node *what = parse_name (p, form), *of, *in;
+  if (what == NULL || !expect_word (p, "of", form) || (of = parse_name (p, form)) == NULL
+      || !expect_word (p, "in", form) || (in = parse_name (p, form)) == NULL)
+    return NULL;
+  return node_link (p, NODE_OF, what, node_link (p, NODE_WITHIN, of, in));
+}
+
+/* "extent" "of" [ "reaction" NUMBER "of" ] NAME  */
+static struct node *
+parse_extent (struct parser *p)
+{
+  const char *form = "known extent of NAME = 3 kmol/h, or extent of reaction 2 of NAME";
+  struct node *what = parse_name (p, form), *of;
+  if (what == NULL || !expect_word (p, "of", form))
+    return NULL;
+  if (token_behind (p).kind == TOKEN_NUMBER && accept_word (p, "reaction")) {
+    const char *figure;
+    if (!parse_bare_number (p, &what->number, &figure) || !expect_word (p, "of", form))
+      return NULL;
+  }
+  return (of = parse_name (p, form)) != NULL ? node_link (p, NODE_OF, what, of) : NULL;
+}
+
+/* "absent" NAME { "," NAME } "of" NAME  */
+static bool
+parse_absent (struct parser *p, struct statement *statement)
+{
+  const char *form = "absent H2S, CO2 of NAME";
+  const struct node *of;
+  if ((statement->names = parse_names (p, form)) == NULL || !expect_word (p, "of", form)
+      || (of = parse_name (p, form)) == NULL)
+    return false;
+  statement->value = of;
+  return expect_end (p, form);
+}
+
+/* "per" sum  */
+static bool
+parse_per (struct parser *p, struct statement *statement)
+{
+  const char *form = "per 100 kmol/h of NAME";
+  return (statement->value = parse_sum (p)) != NULL && (at_end (p) || fail_behind_sum (p, form));
+}
+
+/* Is `of` the word behind the one at hand?  */
+static bool
+token_is_of (const struct parser *p)
+{
+  struct token behind = token_behind (p);
+  return token_is (p, &behind, "of");
 }
 
 static bool
 parse_known (struct parser *p, struct statement *statement)
 {
-  /* "known" sum "=" sum  */
-  if ((statement->value = parse_sum (p)) == NULL)
+  /* "known" ( sum | conversion | extent ) "=" sum | "known" NAME "without" NAME  */
+  bool of = token_is_of (p);
+  statement->value = of && at_word (p, "conversion") ? parse_conversion (p)
+                     : of && at_word (p, "extent") ? parse_extent (p) : parse_sum (p);
+  if (statement->value == NULL)
     return false;
+  if (statement->value->kind == NODE_WITHOUT && at_end (p))
+    return true;
   if (!accept (p, TOKEN_EQUALS))
     return fail_behind_sum (p, KNOWN);
   statement->claim = parse_sum (p);
@@ -80,13 +193,22 @@ parse_end (struct parser *p, struct statement *statement)
   return true;
 }
 
+static bool
+parse_list_of (struct parser *p, struct statement *statement, const char *form)
+{
+  return (statement->names = parse_names (p, form)) != NULL && expect_end (p, form);
+}
+
 bool
 parse_balance_line (struct parser *p, struct statement *statement)
 {
-  /* line = ( "mix" | "separate" | "split" ) ... | "components" ... | "known" ... | "end"  */
+  /* line = ( "mix" | "separate" | "split" | "react" ) ... | "components" ... | "known" ...
+            | "absent" ... | "per" ... | "around" NAME { "," NAME } | "end"  */
   static const struct { const char *word; enum statement_kind kind; } openers[] = {
     { "mix", STATEMENT_MIX }, { "separate", STATEMENT_SEPARATE }, { "split", STATEMENT_SPLIT },
-    { "components", STATEMENT_COMPONENTS }, { "known", STATEMENT_KNOWN }
+    { "react", STATEMENT_REACT }, { "components", STATEMENT_COMPONENTS },
+    { "known", STATEMENT_KNOWN }, { "absent", STATEMENT_ABSENT }, { "per", STATEMENT_PER },
+    { "around", STATEMENT_AROUND }
   };
   if (at_word (p, "end"))
     return parse_end (p, statement);
@@ -96,19 +218,19 @@ parse_balance_line (struct parser *p, struct statement *statement)
       statement->kind = openers[i].kind;
       break;
     }
-  if (statement->kind == STATEMENT_KNOWN)
-    return parse_known (p, statement);
-  if (statement->kind == STATEMENT_COMPONENTS) {
-    statement->names = parse_names (p, "components CH4, CO2");
-    return statement->names != NULL && expect_end (p, "components CH4, CO2");
-  }
-  if (statement->kind != STATEMENT_EMPTY)
+  switch ((int) statement->kind) {
+  case STATEMENT_KNOWN: return parse_known (p, statement);
+  case STATEMENT_ABSENT: return parse_absent (p, statement);
+  case STATEMENT_PER: return parse_per (p, statement);
+  case STATEMENT_COMPONENTS: return parse_list_of (p, statement, "components CH4, CO2");
+  case STATEMENT_AROUND: return parse_list_of (p, statement, "around NAME, NAME");
+  case STATEMENT_EMPTY:
+    return fail_here (p, MESSAGE_BLOCK_LINE, token_text (p, &p->token),
+                      statement_opened (p, &p->token) != STATEMENT_EMPTY
+                      ? "the balance is still open: close it with end" : OPENERS);
+  default:
     return parse_boundary (p, statement);
-  return fail_here (p, MESSAGE_BLOCK_LINE, token_text (p, &p->token),
-                    statement_opened (p, &p->token) != STATEMENT_EMPTY
-                    ? "the balance is still open: close it with end"
-                    : "inside a balance a line opens with mix, separate, split, components, known"
-                      " or end");
+  }
 }
 
 bool

@@ -74,6 +74,23 @@ parse_only_name (struct parser *p, struct statement *statement, bool optional, c
   return expect_end (p, form);
 }
 
+/* "solve" [ NAME ] [ "in" target { "," target } ]  */
+static bool
+parse_solve (struct parser *p, struct statement *statement)
+{
+  const char *form = "solve, solve NAME, or solve NAME in kg/h";
+  if (!at_end (p) && !at_word (p, "in")) {
+    const struct node *name = parse_name (p, form);
+    if (name == NULL)
+      return false;
+    statement->name = name->text;
+    statement->name_at = name->at;
+  }
+  if (accept_word (p, "in") && (statement->targets = parse_targets (p, false)) == NULL)
+    return false;
+  return expect_end (p, form);
+}
+
 /* "balance" NAME NL  */
 static bool
 parse_balance (struct parser *p, struct statement *statement)
@@ -311,7 +328,7 @@ parse_opened (struct parser *p, struct statement *statement)
   case STATEMENT_NORMALISE: return parse_normalise (p, statement);
   case STATEMENT_SET: return parse_set (p, statement);
   case STATEMENT_BALANCE: return parse_balance (p, statement);
-  case STATEMENT_SOLVE: return parse_only_name (p, statement, true, "solve, or solve NAME");
+  case STATEMENT_SOLVE: return parse_solve (p, statement);
   case STATEMENT_SHEET: return parse_sheet (p, statement);
   case STATEMENT_CHECK: return parse_check (p, statement);
   case STATEMENT_MONTECARLO: return parse_montecarlo (p, statement);
@@ -325,8 +342,9 @@ parse_opened (struct parser *p, struct statement *statement)
   case STATEMENT_UNDO: case STATEMENT_WORKINGS: case STATEMENT_QUIT:
     return expect_end (p, arena_format (p->arena, "'%s' stands alone", token_text (p, &p->first)));
   case STATEMENT_ASK: case STATEMENT_MIX: case STATEMENT_SEPARATE: case STATEMENT_SPLIT:
-  case STATEMENT_REACT: case STATEMENT_COMPONENTS: case STATEMENT_KNOWN: case STATEMENT_FIGURE:
-  case STATEMENT_END: case STATEMENT_EMPTY: default:
+  case STATEMENT_REACT: case STATEMENT_COMPONENTS: case STATEMENT_KNOWN: case STATEMENT_ABSENT:
+  case STATEMENT_PER: case STATEMENT_AROUND: case STATEMENT_FIGURE: case STATEMENT_END:
+  case STATEMENT_EMPTY: default:
     return fail_unexpected (p, NULL);
   }
 }

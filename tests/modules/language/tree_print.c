@@ -507,8 +507,12 @@ word_of (enum statement_kind kind)
   case STATEMENT_SPLIT: return "split";
   case STATEMENT_COMPONENTS: return "components";
   case STATEMENT_KNOWN: return "known";
+  case STATEMENT_ABSENT: return "absent";
+  case STATEMENT_PER: return "per";
+  case STATEMENT_AROUND: return "around";
   case STATEMENT_END: return "end";
-  case STATEMENT_REACT: case STATEMENT_FIGURE: case STATEMENT_EMPTY: default: return "?";
+  case STATEMENT_REACT: return "react";
+  case STATEMENT_FIGURE: case STATEMENT_EMPTY: default: return "?";
   }
 }
 
@@ -521,7 +525,7 @@ tree_print (struct text *out, const struct statement *s)
   case STATEMENT_GAS: print_gas (out, s); break;
   case STATEMENT_TRIM: print_trim (out, s); break;
   case STATEMENT_NORMALISE: print_normalise (out, s); break;
-  case STATEMENT_MIX: case STATEMENT_SEPARATE: case STATEMENT_SPLIT:
+  case STATEMENT_MIX: case STATEMENT_SEPARATE: case STATEMENT_SPLIT: case STATEMENT_REACT:
     print_boundary (out, word, s);
     break;
   case STATEMENT_FIGURE: print_sheet_figure (out, s); break;

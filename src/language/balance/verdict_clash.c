@@ -1,0 +1,132 @@
+/* Facts that cannot all hold: the smallest set, in the user's own lines, with the gap and what
+   each line would have to say if it alone were at fault.                                        */
+#include "config.h"
+#include "language/balance/verdict_private.h"
+
+#include <math.h>
+#include <string.h>
+#include "support/arena.h"
+
+/* The names of the boundaries of the envelope that does not close: "dosing + membrane".  */
+static const char *
+envelope (struct verdict_maker *m, const struct conflict *conflict)
+{
+  const char *names = NULL;
+  for (size_t b = 0; b < m->plant->boundary_count; b++)
+    if (conflict->around && conflict->around[b]) {
+      names = names ? arena_format (m->arena, "%s + %s", names, m->plant->boundary[b].name)
+                    : m->plant->boundary[b].name;
+    }
+  return names;
+}
+
+static void
+tell_gap (struct verdict_maker *m, const struct conflict *conflict)
+{
+  struct balance_verdict *v = m->verdict;
+  v->gap_around = envelope (m, conflict);
+  if (!v->gap_around) {
+    v->head = "these facts of one place do not go together";
+    return;
+  }
+  v->gap_component = conflict->component < m->plant->component_count && !m->plant->whole
+                       ? component_text (m->plant, conflict->component) : "total";
+  v->gap = conflict->gap * m->per;
+  v->gap_unit = m->unit;
+  v->head = arena_format (m->arena, "around %s, %s is out by %s %s (in less out)", v->gap_around,
+                          *v->gap_component == 't' ? "the total" : v->gap_component,
+                          figure_text (m->arena, v->gap), m->unit);
+}
+
+static const char *
+needed_text (struct verdict_maker *m, const struct suspect *suspect)
+{
+  const struct plant_fact *f = &m->plant->fact[suspect->fact];
+  bool gas = m->plant->network.fact[suspect->fact].kind == FACT_COMPOSITION;
+  if (isnan (suspect->needed)) {
+    return "not at fault alone";
+  }
+  const char *value = fact_value_text (m, suspect->fact, suspect->needed);
+  if (gas) {
+    value = arena_format (m->arena, "%s %s", component_text (m->plant, suspect->component), value);
+  }
+  if (suspect->plausible) {
+    return value;
+  }
+  return suspect->needed < 0 ? "not at fault (it would be negative)"
+         : f->per > 99 && f->per < 101 && suspect->needed > 1
+           ? "not at fault (it would be more than the whole)"
+           : arena_format (m->arena, "not at fault (%s: a flow would be negative)", value);
+}
+
+/* All suspects of one line stand in one row.  */
+static void
+tell_line (struct verdict_maker *m, const struct conflict *conflict, size_t first)
+{
+  const struct plant_fact *f = &m->plant->fact[conflict->suspects[first].fact];
+  struct text_list needed = { NULL, 0, 0 };
+  bool plausible = false;
+  for (int wanted = 1; wanted >= 0; wanted--)
+    for (size_t i = first; i < conflict->count; i++) {
+      const struct suspect *suspect = &conflict->suspects[i];
+      const struct plant_fact *other = &m->plant->fact[suspect->fact];
+      if (other->line == f->line && strcmp (other->text, f->text) == 0
+          && suspect->plausible == (wanted == 1) && !(wanted == 0 && plausible)) {
+        text_list_add (m->arena, &needed, needed_text (m, suspect));
+        plausible = plausible || suspect->plausible;
+      }
+    }
+  struct verdict_row *row = verdict_add_row (m, f->line);
+  const char *text = needed.at[0];
+  for (size_t i = 1; i < needed.count; i++) {
+    text = arena_format (m->arena, "%s, or %s", text, needed.at[i]);
+  }
+  row->cell[0] = f->text;
+  row->cell[1] = text;
+}
+
+static bool
+is_told (const struct verdict_maker *m, const struct conflict *conflict, size_t i)
+{
+  const struct plant_fact *f = &m->plant->fact[conflict->suspects[i].fact];
+  for (size_t k = 0; k < i; k++) {
+    const struct plant_fact *other = &m->plant->fact[conflict->suspects[k].fact];
+    if (other->line == f->line && strcmp (other->text, f->text) == 0) {
+      return true;
+    }
+  }
+  return false;
+}
+
+void
+verdict_clash (struct verdict_maker *m)
+{
+  const struct conflict *conflict = m->solution->conflict;
+  struct balance_verdict *v = m->verdict;
+  struct text_list lines = { NULL, 0, 0 };
+  struct verdict_suspect *suspects = ARENA_ARRAY (m->arena, conflict->count,
+                                                  struct verdict_suspect);
+  size_t count = 0;
+  v->clash = true;
+  v->heading[0] = "these cannot all hold";
+  v->heading[1] = "alone at fault, it would have to be";
+  tell_gap (m, conflict);
+  for (size_t i = 0; i < conflict->count; i++) {
+    const struct suspect *suspect = &conflict->suspects[i];
+    const struct plant_fact *f = &m->plant->fact[suspect->fact];
+    text_list_add (m->arena, &lines, f->text);
+    if (suspect->plausible && !isnan (suspect->needed)) {
+      suspects[count++] = (struct verdict_suspect) { f->line, f->text, suspect->needed * f->per,
+                                                     f->unit };
+    }
+  }
+  /* In the order of the lines.  */
+  for (size_t line = 0; line <= m->plant->fact[m->plant->fact_count - 1].line; line++)
+    for (size_t i = 0; i < conflict->count; i++)
+      if (m->plant->fact[conflict->suspects[i].fact].line == line && !is_told (m, conflict, i)) {
+        tell_line (m, conflict, i);
+      }
+  v->conflict = text_list_done (&lines);
+  v->suspects = suspects;
+  v->suspect_count = count;
+}

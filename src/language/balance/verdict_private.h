@@ -1,0 +1,42 @@
+/* How a verdict is put together (verdict*.c).  */
+#ifndef LANGUAGE_BALANCE_VERDICT_PRIVATE_H
+#define LANGUAGE_BALANCE_VERDICT_PRIVATE_H
+
+#include "language/balance/plant_private.h"
+#include "language/evaluate/wording.h"
+#include "result/balance_verdict.h"
+
+struct verdict_maker {
+  struct evaluation *ev;
+  struct arena *arena;
+  const struct plant *plant;
+  const struct solution *solution;
+  struct balance_verdict *verdict;
+  struct verdict_row **last_fact, **last_row;
+  double per;                              /* flows are told as value * per ... */
+  const char *unit;                        /* ... in this */
+};
+
+/* A growing list of texts.  */
+struct text_list { const char **at; size_t count, room; };
+void text_list_add (struct arena *, struct text_list *, const char *);
+struct verdict_texts text_list_done (const struct text_list *);
+/* "a, b, c".  */
+const char *text_list_joined (struct arena *, const struct text_list *);
+
+void verdict_fact (struct verdict_maker *, const char *label, const char *text);
+struct verdict_row *verdict_add_row (struct verdict_maker *, size_t number);
+/* "flow of tail", "CH4 of tail".  */
+const char *quantity_text (const struct verdict_maker *, const struct quantity *);
+const char *component_text (const struct plant *, size_t component);
+/* The fact's line without its statement word; "1520 Nm3/h".  */
+const char *fact_value_text (const struct verdict_maker *, size_t fact, double value);
+
+/* verdict_streams.c: the solution, stream by stream.  */
+bool verdict_streams (struct verdict_maker *, const struct target *) MUST_CHECK;
+void verdict_open (struct verdict_maker *);              /* verdict_open.c */
+void verdict_clash (struct verdict_maker *);             /* verdict_clash.c */
+void verdict_reconciled (struct verdict_maker *);        /* verdict_reconciled.c */
+void verdict_around (struct verdict_maker *);            /* verdict_around.c */
+
+#endif

@@ -1,0 +1,234 @@
+/* Measured figures brought together: where each moved, whether they agree, and which of them
+   could be wrong.                                                                               */
+#include "config.h"
+#include "language/balance/verdict_private.h"
+
+#include <math.h>
+#include <string.h>
+#include "result/result.h"
+#include "support/arena.h"
+
+/* What a figure is called: its stream, or the component of it.  */
+static const char *
+figure_name (const struct verdict_maker *m, const struct adjustment *a)
+{
+  const struct plant *plant = m->plant;
+  const struct plant_fact *f = &plant->fact[a->fact];
+  const struct fact *fact = &plant->network.fact[a->fact];
+  if (fact->kind == FACT_COMPOSITION && a->component < plant->component_count) {
+    return arena_format (m->arena, "%s of %s", component_text (plant, a->component),
+                         plant->stream[f->stream].name);
+  }
+  const char *equals = strchr (f->words, '=');
+  if (f->line > 0 && equals) {
+    size_t n = (size_t) (equals - f->words);
+    while (n > 0 && f->words[n - 1] == ' ') {
+      n--;
+    }
+    return arena_copy (m->arena, f->words, n);
+  }
+  return f->stream != NO_STREAM ? plant->stream[f->stream].name : f->words;
+}
+
+static const char *
+pair_text (const struct verdict_maker *m, double value, double u)
+{
+  return arena_format (m->arena, "%s +/- %.2g", figure_text (m->arena, value), u);
+}
+
+static void
+adjustment_row (struct verdict_maker *m, const struct adjustment *a)
+{
+  double per = m->plant->fact[a->fact].per;
+  struct verdict_row *row = verdict_add_row (m, 0);
+  double by = (a->moved_to - a->stated) / a->stated_u;
+  row->cell[0] = figure_name (m, a);
+  row->cell[1] = pair_text (m, a->stated * per, a->stated_u * per);
+  row->cell[2] = a->class == FIGURE_UNOBSERVABLE ? "not observable"
+                 : pair_text (m, a->moved_to * per, a->moved_to_u * per);
+  row->cell[3] = a->class == FIGURE_REDUNDANT
+                   ? arena_format (m->arena, "%+.2f u, z %s   %s", by,
+                                   arena_format (m->arena, "%.4g", fabs (a->z)),
+                                   m->plant->fact[a->fact].unit)
+                   : arena_format (m->arena, "nothing else checks it   %s",
+                                   m->plant->fact[a->fact].unit);
+}
+
+static void
+tell_adjustments (struct verdict_maker *m)
+{
+  const struct solution *s = m->solution;
+  struct balance_verdict *v = m->verdict;
+  struct verdict_adjustment *list = ARENA_ARRAY (m->arena, s->adjustment_count,
+                                                 struct verdict_adjustment);
+  v->heading[0] = "";
+  v->heading[1] = "stated";
+  v->heading[2] = "moved to";
+  v->heading[3] = "by";
+  for (size_t i = 0; i < s->adjustment_count; i++) {
+    const struct adjustment *a = &s->adjustments[i];
+    const struct plant_fact *f = &m->plant->fact[a->fact];
+    bool part = m->plant->network.fact[a->fact].kind == FACT_COMPOSITION;
+    list[i] = (struct verdict_adjustment) {
+      .statement = f->text, .component = part ? component_text (m->plant, a->component) : NULL,
+      .unit = f->unit, .stated = a->stated * f->per, .reconciled = a->moved_to * f->per,
+      .uncertainty = a->moved_to_u * f->per,
+      .z = a->class == FIGURE_REDUNDANT ? fabs (a->z) : UNSTATED
+    };
+    adjustment_row (m, a);
+  }
+  v->adjustments = list;
+  v->adjustment_count = s->adjustment_count;
+}
+
+/* Figures that share the largest z, as one list; *Z says it.  */
+static struct text_list
+standing_out (const struct verdict_maker *m, double *z)
+{
+  const struct solution *s = m->solution;
+  struct text_list names = { NULL, 0, 0 };
+  *z = 0;
+  for (size_t i = 0; i < s->adjustment_count; i++)
+    if (s->adjustments[i].class == FIGURE_REDUNDANT) {
+      *z = fmax (*z, fabs (s->adjustments[i].z));
+    }
+  for (size_t i = 0; i < s->adjustment_count; i++) {
+    const struct adjustment *a = &s->adjustments[i];
+    if (a->class == FIGURE_REDUNDANT && fabs (a->z) > *z * (1 - 1e-7)) {
+      text_list_add (m->arena, &names, figure_name (m, a));
+    }
+  }
+  return names;
+}
+
+static void
+tell_who (struct verdict_maker *m)
+{
+  double z;
+  struct text_list names = standing_out (m, &z);
+  struct result *result = m->ev->result;
+  const char *figure = arena_format (m->arena, "%.4g", z);
+  if (!result || names.count == 0) {
+    return;
+  }
+  const char *joined = text_list_joined (m->arena, &names);
+  if (z <= m->solution->z_critical && m->solution->passed) {
+    result_remark (result, names.count > 1 ? MESSAGE_NOTE_NONE_STANDS_OUT_TIE
+                                           : MESSAGE_NOTE_NONE_STANDS_OUT, joined, figure);
+    return;
+  }
+  struct remark *remark = result_remark (result, names.count > 1 ? MESSAGE_NOTE_SUSPECTS_TIE
+                                                                 : MESSAGE_NOTE_SUSPECT,
+                                         joined, figure);
+  remark->fact[2] = arena_format (m->arena, "%.3g", m->solution->z_critical);
+}
+
+/* Whoever is suspected, in which words of his the rest would be met.  */
+static void
+tell_suspects (struct verdict_maker *m)
+{
+  const struct solution *s = m->solution;
+  struct verdict_suspect *suspects = ARENA_ARRAY (m->arena, s->adjustment_count,
+                                                  struct verdict_suspect);
+  size_t count = 0;
+  double z;
+  (void) standing_out (m, &z);
+  for (size_t i = 0; !s->passed && i < s->adjustment_count; i++) {
+    const struct adjustment *a = &s->adjustments[i];
+    const struct plant_fact *f = &m->plant->fact[a->fact];
+    if (a->class == FIGURE_REDUNDANT && !isnan (a->implied)
+        && fabs (a->z) > z * (1 - 1e-7)) {
+      suspects[count++] = (struct verdict_suspect) { f->line, f->text, a->implied * f->per,
+                                                     f->unit };
+      verdict_fact (m, count > 1 ? "" : "alone at fault",
+                    arena_format (m->arena, "%s would have to be %s (stated %s)",
+                                  figure_name (m, a), fact_value_text (m, a->fact, a->implied),
+                                  figure_text (m->arena, a->stated * f->per)));
+    }
+  }
+  m->verdict->suspects = suspects;
+  m->verdict->suspect_count = count;
+}
+
+static void
+tell_leaks (struct verdict_maker *m)
+{
+  const struct solution *s = m->solution;
+  for (size_t i = 0; !s->passed && i < s->leak_count && i < 3; i++) {
+    const struct leak *leak = &s->leaks[i];
+    verdict_fact (m, i ? "" : "or a leak",
+                  arena_format (m->arena, "%s %s %s of %s at %s: chi2 would fall by %.4g",
+                                figure_text (m->arena, fabs (leak->size) * m->per), m->unit,
+                                leak->size < 0 ? "too much" : "lost",
+                                component_text (m->plant, leak->component),
+                                m->plant->boundary[leak->boundary].name, leak->drop));
+  }
+}
+
+static void
+tell_eliminations (struct verdict_maker *m)
+{
+  const struct solution *s = m->solution;
+  for (size_t i = 0; i < s->elimination_count; i++) {
+    const struct elimination *e = &s->eliminations[i];
+    const struct adjustment *a = &s->adjustments[e->adjustment];
+    const char *others = "";
+    for (size_t k = 0; k < e->tie_count; k++)
+      if (e->tie[k] != e->adjustment) {
+        others = arena_format (m->arena, "%s%s%s", others, *others ? ", " : " (or ",
+                               figure_name (m, &s->adjustments[e->tie[k]]));
+      }
+    verdict_fact (m, i ? "and then" : "left out in turn",
+                  arena_format (m->arena, "without %s%s%s chi2 is %.4g with %zu to spare; it would "
+                                "be %s", figure_name (m, a), others, *others ? ")" : "",
+                                e->chi2_left, e->freedom_left,
+                                fact_value_text (m, a->fact, e->implied)));
+  }
+}
+
+static void
+tell_by_digits (struct verdict_maker *m)
+{
+  struct text_list lines = { NULL, 0, 0 };
+  for (size_t f = 0; m->solution->by_digits && f < m->plant->fact_count; f++)
+    if (m->solution->by_digits[f]) {
+      text_list_add (m->arena, &lines, m->plant->fact[f].words);
+    }
+  if (lines.count > 0 && m->ev->result) {
+    result_remark (m->ev->result, MESSAGE_TAKEN_DIGITS, text_list_joined (m->arena, &lines), NULL);
+  }
+  if (m->solution->held_count > 0 && m->ev->result) {
+    struct text_list held = { NULL, 0, 0 };
+    size_t n = m->plant->network.components;
+    for (size_t i = 0; i < m->solution->held_count; i++)
+      if (m->solution->held[i] < n * m->plant->stream_count) {
+        text_list_add (m->arena, &held, m->plant->stream[m->solution->held[i] / n].name);
+      }
+    result_remark (m->ev->result, MESSAGE_NOTE_HELD_AT_ZERO, text_list_joined (m->arena, &held),
+                   NULL);
+  }
+}
+
+void
+verdict_reconciled (struct verdict_maker *m)
+{
+  const struct solution *s = m->solution;
+  struct balance_verdict *v = m->verdict;
+  v->tested = s->freedom > 0;
+  v->chi2 = s->chi2;
+  v->critical = s->critical;
+  v->freedom = s->freedom;
+  v->passed = s->passed;
+  v->head = s->freedom == 0 ? "nothing to spare: no figure checks another"
+            : arena_format (m->arena, "%zu to spare; global test %.6g, limit %.4g, p %.2g: %s",
+                            s->freedom, s->chi2, s->critical, s->p,
+                            s->passed ? "they agree" : "THEY DO NOT AGREE, a gross error");
+  tell_adjustments (m);
+  if (s->freedom > 0) {
+    tell_who (m);
+  }
+  tell_suspects (m);
+  tell_leaks (m);
+  tell_eliminations (m);
+  tell_by_digits (m);
+}

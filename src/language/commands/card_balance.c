@@ -1,0 +1,35 @@
+#include "config.h"
+#include "language/commands/commands.h"
+
+#include <string.h>
+#include "language/balance/plant.h"
+#include "result/result.h"
+#include "support/arena.h"
+
+/* The card of a balance: its lines with their numbers, and what it comes to in a sentence.  */
+void
+card_of_balance (const struct definition *d, struct result *result)
+{
+  static const char *const blank[] = { "" };
+  const struct plant *plant = d->value.plant;
+  struct card *card = result_card (result, d->name,
+                                   arena_format (result->arena, "balance, %zu boundar%s, %zu "
+                                                 "streams", plant->boundary_count,
+                                                 plant->boundary_count == 1 ? "y" : "ies",
+                                                 plant->stream_count), 1, blank);
+  size_t number = 0;
+  for (const struct statement *line = d->statement->next; line && line->kind != STATEMENT_END;
+       line = line->next) {
+    struct cell *cells = card_add_row (result, card,
+                                       arena_format (result->arena, "%zu", ++number));
+    cells[0].text = line->source;
+  }
+  for (size_t s = 0; s < plant->stream_count; s++)
+    if (plant->stream[s].given) {
+      card_add_line (result, card, arena_format (result->arena, "%s enters as it was defined: %s",
+                                                 plant->stream[s].name,
+                                                 plant->stream[s].given->source));
+    }
+  card_add_line (result, card, arena_format (result->arena, "solve %s says what it comes to",
+                                             d->name));
+}

@@ -1,0 +1,110 @@
+#include "config.h"
+#include "language/commands/commands.h"
+
+#include <string.h>
+#include "language/balance/plant.h"
+#include "result/result.h"
+#include "support/arena.h"
+#include "support/fault.h"
+
+static bool
+refuse (struct session *session, const struct statement *s, const struct definition *d,
+        struct fault *fault)
+{
+  struct evaluation ev;
+  struct node name = { .kind = NODE_NAME, .text = s->name, .at = s->name_at };
+  evaluation_init (&ev, session, NULL, fault);
+  if (d) {
+    return fault_set_at (fault, MESSAGE_KIND_WRONG, s->name_at,
+                         arena_format (fault->arena, "'%s' is no balance", s->name),
+                         "a balance opens with balance NAME and closes with end");
+  }
+  return s->name ? name_unknown (&ev, &name)
+                 : fault_set_at (fault, MESSAGE_KIND_WRONG, s->at, "there is no balance to solve",
+                                 "a balance opens with balance NAME and closes with end");
+}
+
+/* The balance called NAME; without a name the one that was closed or solved last.  */
+static struct definition *
+find_balance (struct session *session, const struct statement *s)
+{
+  const char *name = s->name ? s->name : session->last_balance;
+  struct definition *d = name ? name_find (session, name, strlen (name)) : NULL;
+  for (size_t i = session->count; !d && !s->name && i-- > 0;) {
+    d = session->order[i]->kind == NAME_BALANCE ? session->order[i] : NULL;
+  }
+  return d;
+}
+
+static bool
+is_leant_on (struct session *session, struct arena *arena, const char *name)
+{
+  struct definition **leaning;
+  return names_leaning (session, arena, name, &leaning) > 0;
+}
+
+/* The stream as a definition of its own, unless it is one already; taken away if it is no longer
+   fixed and nobody leans on it.                                                                 */
+static void
+make_stream (struct session *session, struct evaluation *ev, const struct plant *plant, size_t s)
+{
+  const char *name = plant->stream[s].name;
+  struct definition *before = name_find (session, name, strlen (name));
+  struct fault unheard;
+  struct value value;
+  struct evaluation quiet;
+  if (before && (!before->maker || strcmp (before->maker, plant->name) != 0)) {
+    return;
+  }
+  fault_init (&unheard, ev->arena);
+  evaluation_again (&quiet, ev, &unheard);
+  bool fixed = plant_stream_value (&quiet, plant, name, &value);
+  if (fixed && !before) {
+    struct definition *d = definition_made (name, plant->name,
+                                            plant->whole ? NAME_QUANTITY : NAME_STREAM);
+    size_t place = name_place (session, d->name, d, session->count);
+    names_remember_mentions (session, d);
+    undo_note (session, d->name, NULL, d, place, NULL);
+  } else if (!fixed && before && !is_leant_on (session, ev->arena, name)) {
+    size_t place = name_place (session, name, NULL, 0);
+    undo_note (session, before->name, before, NULL, place, NULL);
+    definition_release (before);
+  }
+}
+
+bool
+command_solve (struct session *session, const struct statement *s, struct result *result,
+               struct fault *fault)
+{
+  struct definition *d = find_balance (session, s);
+  struct evaluation ev;
+  if (!d || d->kind != NAME_BALANCE) {
+    return refuse (session, s, d, fault);
+  }
+  evaluation_init (&ev, session, result, fault);
+  const struct value *value = definition_value (&ev, d, s->name ? s->name_at : s->at);
+  if (!value) {
+    return false;
+  }
+  const struct plant *plant = value->plant;
+  if (!(result->balance = plant_verdict (&ev, plant, s->targets))) {
+    fault_place (fault, s->name ? s->name_at : s->at);
+    return false;
+  }
+  undo_group_open (session);
+  for (size_t i = 0; i < plant->stream_count; i++) {
+    make_stream (session, &ev, plant, i);
+  }
+  undo_group_close (session);
+  balance_remember (session, d->name);
+  for (size_t i = 0; i < ev.assumption_count; i++) {
+    const struct assumption *a = &ev.assumptions[i];
+    struct remark *remark = result_remark (result, a->kind, a->fact[0], a->fact[1]);
+    remark->fact[2] = a->fact[2];
+    remark->fact[3] = a->fact[3];
+  }
+  for (size_t i = 0; i < ev.used_count; i++) {
+    definition_tell (session, ev.used[i], false, result);
+  }
+  return true;
+}

@@ -1,0 +1,64 @@
+/* What `solve` says of a balance: how many facts there are and what they come to.
+
+   Figures for machines are SI and whole; what people read beside the user's own lines comes as
+   text, in the units the lines are typed in.  A figure nobody can know is NAN, a list without
+   entries null.                                                                                 */
+#ifndef RESULT_BALANCE_VERDICT_H
+#define RESULT_BALANCE_VERDICT_H
+
+#include <stdbool.h>
+#include <stddef.h>
+
+enum verdict_status { VERDICT_DETERMINED, VERDICT_UNDERDETERMINED, VERDICT_REDUNDANT,
+                      VERDICT_CONTRADICTORY, VERDICT_RECONCILED };
+
+struct verdict_stream {
+  const char *name;
+  double molar_flow, mass_flow, uncertainty;     /* mol/s, kg/s, mol/s; NAN: open */
+  const double *fractions;                       /* by component; NAN: open */
+  const double *fractions_u;
+  const double *shown;                           /* flows in the units of `units` */
+  double shown_u;                                /* of the first of these */
+  double stated_u;
+};
+
+/* One row of text with cells; `number` is that of a user's line, 0 of none.  */
+struct verdict_row { size_t number; const char *cell[4]; struct verdict_row *next; };
+
+/* mol/s; the greatest may be infinite.  */
+struct verdict_range { const char *name; double least, greatest; };
+struct verdict_suspect { size_t line; const char *statement; double needed; const char *unit; };
+struct verdict_adjustment {
+  const char *statement, *component, *unit;      /* component: null where it is no share */
+  double stated, reconciled, uncertainty, z;
+};
+struct verdict_texts { size_t count; const char *const *at; };
+
+struct balance_verdict {
+  const char *name;
+  enum verdict_status status;
+  const char *phrase, *head;                     /* "SHORT BY 1"; the one thing to know, or "" */
+  const char *counts;                            /* the sentence with its result */
+  size_t variables, balances, relations, knowns, independent, missing, surplus;
+
+  bool mass;                                     /* flows are by mass: molar_flow is NAN */
+  size_t component_count; const char *const *components;
+  size_t unit_count; const char *const *units;   /* columns of `shown` */
+  size_t stream_count; const struct verdict_stream *streams;
+
+  struct verdict_row *facts;                     /* label, text: "fixed all the same ..." */
+  struct verdict_row *rows;                      /* of a clash or of what was reconciled */
+  const char *heading[4];                        /* of `rows` */
+  bool clash;
+
+  size_t range_count; const struct verdict_range *ranges;
+  struct verdict_texts determined, undetermined, relations_left, negative, conflict, redundant;
+  size_t suggestion_count; const struct verdict_texts *suggestions;
+  const char *gap_around, *gap_component, *gap_unit;             /* null: no gap */
+  double gap;
+  size_t suspect_count; const struct verdict_suspect *suspects;
+  size_t adjustment_count; const struct verdict_adjustment *adjustments;
+  bool tested; double chi2, critical; size_t freedom; bool passed;
+};
+
+#endif
