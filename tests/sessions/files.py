@@ -5,6 +5,7 @@ The files are made here.  Expected figures are sums and quotients of what stands
 """
 import os
 import statistics
+import subprocess
 import sys
 import tempfile
 
@@ -438,6 +439,35 @@ def life(tap):
     os.rename("gone.csv", "life.csv")
 
 
+def changes(tap):
+    """A file that is written anew, or goes away, while the session is open."""
+    write("live.csv", "component,mol%\nCH4,60\nCO2,40\n")
+    with subprocess.Popen([session.program(), "--format", "json"], stdin=subprocess.PIPE,
+                          stdout=subprocess.PIPE, bufsize=0) as program:
+        def ask(line):
+            program.stdin.write(line.encode() + b"\n")
+            return session.json.loads(program.stdout.readline())
+
+        program.stdin.write(b'gas lab from "live.csv"\ngas b = lab without CO2 normalised\n')
+        before = ask("CH4 of lab in mol%")
+        write("live.csv", "component,mol%\nCH4,70.5\nCO2,29.5\n")
+        after = ask("CH4 of lab in mol%")
+        derived = ask("CH4 of b in mol%")
+        program.stdin.write(b'gas lab from "live.csv"\n')
+        again = ask("CH4 of lab in mol%")
+        os.remove("live.csv")
+        gone = ask("CH4 of lab in mol%")
+    values = [thing["answers"][0]["value"] for thing in (before, after, again, gone)]
+    tap.tell([] if [round(v, 9) for v in values] == [60, 60, 70.5, 70.5] else [str(values)],
+             "a gas keeps the figures that were read, until its statement is said again")
+    said = [any("has changed" in note for note in thing["notes"])
+            for thing in (before, after, derived, again)]
+    tap.tell([] if said == [False, True, True, False] else [str(said)],
+             "that a file has changed is said under what rests on it")
+    tap.tell([] if any("no longer there" in note for note in gone["notes"]) else [str(gone)],
+             "that a file is gone is said")
+
+
 # ISO 5725-2:1994, table 5: critical values of Grubbs' test, 5 % and 1 % (from memory).
 GRUBBS = {5: (1.715, 1.764), 6: (1.887, 1.973), 7: (2.020, 2.139)}
 
@@ -577,6 +607,7 @@ def main():
         said(tap)
         practice(tap)
         life(tap)
+        changes(tap)
         trends(tap)
         os.chdir("/")
     return tap.finish()

@@ -168,21 +168,22 @@ static bool
 ask_one (struct asking *a, struct evaluation *ev, size_t i, bool first)
 {
   const struct members *m = &a->members;
-  struct stand_in in = { .definition = m->place };
+  struct stand_in *in = ARENA_NEW (ev->arena, struct stand_in);
+  struct result *aside = ARENA_NEW (ev->arena, struct result);   /* hears what would be a note */
   struct value value;
   struct figures figures = { NULL, 0, 0 };
   struct trend_row *row = &a->rows[i];
   struct arena *kept = a->result->arena;
   bool itself = m->names && strcmp (m->names[i]->text, m->place->name) == 0;
-  in.tree = m->names ? m->names[i]
-            : file_sample (a->session, ev->arena, &a->members.file, i, ev->fault);
-  if (!in.tree) {
+  in->definition = m->place;
+  in->tree = m->names ? m->names[i]
+             : file_sample (a->session, ev->arena, &a->members.file, i, ev->fault);
+  if (!in->tree) {
     return false;
   }
-  struct result aside;                     /* hears what would be a note */
-  result_init (&aside, ev->arena, a->statement->source);
-  ev->result = &aside;
-  ev->stand_ins = &in;
+  result_init (aside, ev->arena, a->statement->source);
+  ev->result = aside;
+  ev->stand_ins = in;
   ev->stand_in_count = itself ? 0 : 1;
   if (!question_figures (ev, a->statement, &value, &figures)) {
     return false;
@@ -192,10 +193,10 @@ ask_one (struct asking *a, struct evaluation *ev, size_t i, bool first)
                          "a trend follows one figure", "trend wobbe of lab in MJ/m3");
   }
   const struct figure *f = &figures.at[0];
-  if (not_stated (&aside)) {
-    row->why = arena_format (kept, "no %s is stated", not_stated (&aside));
+  if (not_stated (aside)) {
+    row->why = arena_format (kept, "no %s is stated", not_stated (aside));
     return fault_set_at (ev->fault, MESSAGE_NO_SUCH_PART, a->statement->value->at,
-                         not_stated (&aside), NULL);
+                         not_stated (aside), NULL);
   }
   ev->result = NULL;
   const struct budget **budgets = uncertainty_budgets (ev, a->statement, &figures);
@@ -288,8 +289,8 @@ share_basis (struct asking *a)
                                    first->moisture ? first->moisture : "") == 0;
     basis = basis && strcmp (r->basis ? r->basis : "", first->basis ? first->basis : "") == 0;
   }
-  t->moisture = moisture ? first->moisture : NULL;
-  t->basis = basis ? first->basis : NULL;
+  t->moisture = first && moisture ? first->moisture : NULL;
+  t->basis = first && basis ? first->basis : NULL;
   for (size_t i = 0; i < t->count; i++) {
     a->rows[i].moisture = moisture ? NULL : a->rows[i].moisture;
     a->rows[i].basis = basis ? NULL : a->rows[i].basis;
