@@ -137,7 +137,7 @@ REFUSED = (
     ("", "cp of (CH4 90, N2 10 mol%)", "state-missing", "cp of ... at 20 degC, 1 bar(a)"),
     ("", "wobbe of CH4 + 3 kg/h", "unit-mismatch", ""),
     ("", "cp of CH4", "state-missing", "temperature and a pressure"),
-    ("", "viscosity of CH4", "state-missing", "viscosity of CH4 at"),
+    ("", "viscosity of CH4", "temperature-missing", "viscosity of CH4 at"),
     ("", "flammable limits of N2", "range", "nothing in it burns"),
     ("", "flammable limits of air", "range", "too little fuel"),
 )
