@@ -244,13 +244,28 @@ layout_column_has_figures (const struct laboratory *lab, size_t column, size_t f
 
 /* ---- All of it ---- */
 
+/* No component at all: a name nobody knows that has a figure beside it, or nothing.  */
+static bool
+nothing_named (const struct laboratory *lab, struct arena *arena, struct fault *fault)
+{
+  const size_t rows = lab->row_count < ROWS_LOOKED_AT ? lab->row_count : ROWS_LOOKED_AT;
+  for (size_t r = 0; r < rows; r++)
+    for (size_t k = 0; k + 1 < lab->rows[r].count; k++) {
+      const struct slice s = cell_slice (lab, r, k);
+      if (!amount_looks (s) && amount_looks (cell_slice (lab, r, k + 1))
+          && heading_read (arena, lab->words, s).kind == HEADING_UNKNOWN)
+        return layout_name_refused (lab, r, k, s, fault);
+    }
+  return complain_at (lab, 0, 0, MESSAGE_LABORATORY_LAYOUT, "no component is named in this file",
+                      "a name stands before its figures, or above them", fault);
+}
+
 bool
 layout_find (struct laboratory *lab, struct arena *arena, struct fault *fault)
 {
   struct census c = count_names (lab, arena);
   if (c.in_row == 0)
-    return complain_at (lab, 0, 0, MESSAGE_LABORATORY_LAYOUT, "no component is named in this file",
-                        "a name stands before its figures, or above them", fault);
+    return nothing_named (lab, arena, fault);
   lab->components = ARENA_ARRAY (arena, axes_most (lab), struct axis);
   lab->samples = ARENA_ARRAY (arena, axes_most (lab), struct axis);
   if (!(lies_by_rows (lab, &c) ? layout_by_component (lab, arena, c.column, fault)

@@ -70,6 +70,8 @@ BAD = [
      "laboratory-name", "2:1", "did you mean 'CH4'"),
     ("a misspelt name without headings", "metane,60\nCO2,39\nN2,1\n", "mol%",
      "laboratory-name", "1:1", "did you mean 'CH4'"),
+    ("a misspelt name alone", "component;mol%\nMethan;58,2\n", "", "laboratory-name", "2:1",
+     "did you mean 'CH4'"),
     ("an unknown heading of figures", "sample,CH4,CO2,Nx2\nA,60,39,1\n", "mol%",
      "laboratory-name", "1:16", "'Nx2'"),
     ("a name in a heading behind blanks", "sample,CH4,CO2,  Nx2\nA,60,39,1\n", "mol%",
@@ -588,6 +590,11 @@ def trends(tap):
     tap.tell([] if rows["B"] == [99, 60, 39, "open", None] and "open" not in rows["A"]
              and abs(rows["mean"][0] - 99.75) < 1e-9 else [str(rows)],
              "an open sample stands in the table as stated, and in no mean")
+    things = session.answers('show samples of "open.csv" mass%\n')
+    rows = {row["name"]: row["values"] for row in things[0]["card"]["rows"]}
+    tap.tell([] if rows["B"][3] == "open" and abs(rows["B"][1] - 60) < 1e-9
+             and abs(rows["B"][0] - 99) < 1e-9 else [str(rows)],
+             "an open sample stated by mass stands as stated")
     rows = trend_of(session.answers('gas lab from "open.csv" sample "A" mol%\n'
                                     "trend CH4 of lab in mol%")).get("rows", [])
     tap.tell([] if [row["value"] is None for row in rows] == [False, True, False]

@@ -67,6 +67,13 @@ heat_of (struct evaluation *ev, const struct composition *gas, int figure)
   return done ? value : UNSTATED;
 }
 
+/* A part as stated: of an open list, whose parts are kept in mol per mole or per kilogram.  */
+static double
+share_stated (const struct analysis *a, const struct part *part)
+{
+  return a->whole == WHOLE_MASS ? part->amount * part->species->molar_mass : part->amount;
+}
+
 static void
 keep_parts (struct table *t, struct row *row, const struct gas_value *gas)
 {
@@ -77,7 +84,8 @@ keep_parts (struct table *t, struct row *row, const struct gas_value *gas)
   double *fraction = ARENA_ARRAY (arena, row->count, double);
   for (size_t i = 0; i < row->count; i++) {
     species[i] = gas->closed ? gas->closed->species[i] : gas->analysis->parts[i].species;
-    fraction[i] = gas->closed ? gas->closed->fraction[i] : gas->analysis->parts[i].amount;
+    fraction[i] = gas->closed ? gas->closed->fraction[i]
+                              : share_stated (gas->analysis, &gas->analysis->parts[i]);
     add_column (t, species[i]);
   }
   row->species = species;
