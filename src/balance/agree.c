@@ -154,10 +154,10 @@ judge (struct core *core, const double rho[], double tolerance)
            - core->sigma[i] * y[core->figure[i]];
   }
   core->p = core->agree ? gsl_cdf_chisq_Q (chi2, (double) rank) : 0;
-  core->agree = core->agree && core->p >= least_p;
   if (core->agree) {
     system_solve (system, b, core->v);
   }
+  core->agree = core->agree && core->p >= least_p;
 }
 
 void

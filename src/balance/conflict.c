@@ -26,6 +26,8 @@ struct work {
   double floor;                  /* rho below this is rounding */
   double *lambda;                /* the best so far, by fact row */
   bool *set, *trial;             /* by fact */
+  bool *kept;                    /* by boundary: has a row with a multiplier */
+  const struct network *part;    /* what the set is about */
   double *trial_lambda, *by_figure;
   size_t count;
   double strength;
@@ -183,38 +185,70 @@ add_causes (struct work *work)
   }
 }
 
-/* Do the facts in SET clash by themselves?  */
+/* Do the facts in SET clash by themselves, in NETWORK or the part of it they are about?  */
 static bool
-clashes (const struct work *work, const bool set[])
+clashes (const struct work *work, const struct network *network, const bool set[])
 {
   struct arena *arena = arena_create ();
-  bool clash = core_clashes (arena, work->core->network, set, work->core->options);
+  bool clash = core_clashes (arena, network, set, work->core->options);
   arena_destroy (arena);
   return clash;
 }
 
-/* Leaves facts out one by one as long as the others still clash.  A set that does not clash by
-   itself leans on facts that made a split linear: then all are gone through.                    */
+/* Leaves out of the set those of the facts LIST[0 .. COUNT - 1] without which the others still
+   clash: all at once, or else by halves.                                                        */
+static bool
+leave_out (struct work *work, const struct network *network, size_t count, const size_t list[],
+           struct fault *fault)
+{
+  if (count == 0) {
+    return true;
+  }
+  if (!core_goes_on (work->core->options, fault)) {
+    return false;
+  }
+  for (size_t i = 0; i < count; i++) {
+    work->set[list[i]] = false;
+  }
+  if (clashes (work, network, work->set)) {
+    return true;
+  }
+  for (size_t i = 0; i < count; i++) {
+    work->set[list[i]] = true;
+  }
+  return count == 1
+         || (leave_out (work, network, count / 2, list, fault)
+             && leave_out (work, network, count - count / 2, list + count / 2, fault));
+}
+
+/* Leaves facts out as long as the others still clash.  A set that does not clash by itself leans on
+   facts that made a split linear: then all are gone through, its own last.                      */
 static bool
 thin_out (struct work *work, struct fault *fault)
 {
-  size_t facts = work->core->network->facts;
-  bool *own = ARENA_ARRAY (work->arena, facts + 1, bool);
-  memcpy (own, work->set, facts * sizeof *own);
-  if (!clashes (work, work->set)) {
+  const struct network *network = work->core->network;
+  size_t facts = network->facts, count = 0, own = 0;
+  size_t *list = ARENA_ARRAY (work->arena, 2 * facts + 1, size_t), *owned = list + facts;
+  for (size_t f = 0; f < facts; f++) {
+    if (work->set[f]) {
+      owned[own++] = f;
+    } else {
+      list[count++] = f;
+    }
+  }
+  work->part = network_part (work->arena, network, work->kept, work->set);
+  if (!clashes (work, work->part, work->set)) {
+    work->part = network;
     for (size_t f = 0; f < facts; f++) {
       work->set[f] = true;
     }
+    if (!leave_out (work, network, count, list, fault)) {
+      return false;
+    }
   }
-  for (int round = 0; round < 2; round++) {
-    for (size_t f = 0; f < facts; f++) {
-      if (!core_goes_on (work->core->options, fault)) {
-        return false;
-      }
-      if (work->set[f] && own[f] == (round == 1)) {
-        work->set[f] = false;
-        work->set[f] = !clashes (work, work->set);
-      }
+  for (size_t i = 0; i < own; i++) {
+    if (!leave_out (work, work->part, 1, &owned[i], fault)) {
+      return false;
     }
   }
   return true;
@@ -301,8 +335,9 @@ find_envelope (struct work *work, struct conflict *conflict)
     return;
   }
   for (size_t i = 0; i < work->system->structure; i++) {
-    if (rows->row[i].kind == ROW_BALANCE && fabs (mu[i]) > no_multiplier * most) {
-      around[rows->row[i].of] = true;
+    if (fabs (mu[i]) > no_multiplier * most) {
+      work->kept[rows->row[i].of] = true;
+      around[rows->row[i].of] = around[rows->row[i].of] || rows->row[i].kind == ROW_BALANCE;
     }
   }
   find_gap (work, mu, at, conflict);
@@ -342,6 +377,7 @@ find_suspects (struct work *work, struct conflict *conflict, struct fault *fault
   }
   for (size_t f = 0; f < network->facts; f++) {
     struct suspect *suspect = &suspects[conflict->count];
+    bool done;
     if (!work->set[f]) {
       continue;
     }
@@ -350,7 +386,12 @@ find_suspects (struct work *work, struct conflict *conflict, struct fault *fault
       suspect->component = odd_component (work, f, conflict);
     }
     all[f] = false;
-    if (!suspect_need (work->core, clashes (work, all) ? work->set : all, suspect, fault)) {
+    if (work->surplus > 1 && clashes (work, network, all)) {
+      done = suspect_need (work->core, work->part, work->set, suspect, fault);
+    } else {
+      done = suspect_need (work->core, network, all, suspect, fault);
+    }
+    if (!done) {
       return false;
     }
     all[f] = true;
@@ -372,6 +413,7 @@ prepare (struct work *work)
   work->by_figure = ARENA_ARRAY (work->arena, work->rows + 1, double);
   work->set = ARENA_ARRAY (work->arena, facts + 1, bool);
   work->trial = ARENA_ARRAY (work->arena, facts + 1, bool);
+  work->kept = ARENA_ARRAY (work->arena, work->core->network->boundaries + 1, bool);
   for (size_t i = 0; i < work->rows; i++) {
     work->right[i] = system->rows.right[m + i] * system->row_scale[m + i];
     most = fmax (most, fabs (work->right[i]));

@@ -17,10 +17,15 @@ struct arena; struct fault;
 bool conflict_find (struct arena *keep, const struct core *, struct solution *, struct fault *)
   MUST_CHECK;
 
-/* What fact F would have to say for the rest (TAKE without it) to hold, of a composition its
-   component C; NAN where the rest does not say.  *PLAUSIBLE: it could be, and no flow would be
-   negative or nothing.                                                                          */
-bool suspect_need (const struct core *, const bool take[], struct suspect *, struct fault *)
-  MUST_CHECK;
+/* What the fact of SUSPECT would have to say for the rest (TAKE without it, in NETWORK, which is
+   the core's or a part of it) to hold, of a composition its component; NAN where the rest does not
+   say.  Plausible: it could be, and no flow would be negative or nothing.                       */
+bool suspect_need (const struct core *, const struct network *, const bool take[],
+                   struct suspect *, struct fault *) MUST_CHECK;
+
+/* The boundaries in KEEP and the facts in TAKE with their streams; the others are left without
+   anything.                                                                                     */
+const struct network *network_part (struct arena *, const struct network *, const bool keep[],
+                                    const bool take[]);
 
 #endif

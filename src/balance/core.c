@@ -210,10 +210,11 @@ core_open (struct core *core)
   }
 }
 
-/* The linear rows, with all splits that can be made linear; null: interrupted.  */
+/* The linear rows, with all splits that can be made linear, as long as the null space has no more
+   than MOST entries; null: interrupted.                                                         */
 static struct core *
 core_linear (struct arena *arena, const struct network *network, const bool take[],
-             const struct solve_options *options, struct fault *fault)
+             const struct solve_options *options, size_t most, struct fault *fault)
 {
   struct core *core = ARENA_NEW (arena, struct core);
   core->arena = arena;
@@ -229,7 +230,8 @@ core_linear (struct arena *arena, const struct network *network, const bool take
       return NULL;
     }
     reduce (core, take);
-  } while (core->agree && core->system->bends > 0 && straighten (core));
+  } while (core->agree && core->system->bends > 0
+           && core->freedom <= most / (core->system->columns + 1) && straighten (core));
   return core;
 }
 
@@ -237,7 +239,7 @@ struct core *
 core_make (struct arena *arena, const struct network *network, const bool take[],
            const struct solve_options *options, struct fault *fault)
 {
-  struct core *core = core_linear (arena, network, take, options, fault);
+  struct core *core = core_linear (arena, network, take, options, (size_t) -1, fault);
   if (!core) {
     return NULL;
   }
@@ -249,9 +251,10 @@ bool
 core_clashes (struct arena *arena, const struct network *network, const bool take[],
               const struct solve_options *options)
 {
+  static const size_t most = 20000000;
   struct fault ignored;
   const struct core *core;
   fault_init (&ignored, arena);
-  core = core_linear (arena, network, take, options, &ignored);
+  core = core_linear (arena, network, take, options, most, &ignored);
   return core && !core->agree;
 }

@@ -46,13 +46,13 @@ keep_proportions (struct doubt *doubt, const struct fact *fact, size_t c)
 }
 
 static struct doubt
-doubt_make (const struct core *core, const bool take[], const struct suspect *suspect)
+doubt_make (struct arena *arena, const struct network *network, const bool take[],
+            const struct suspect *suspect)
 {
-  const struct network *network = core->network;
   size_t most = network->facts + network->components;
   const struct fact *fact = &network->fact[suspect->fact];
-  struct doubt doubt = { core->arena, *network, ARENA_ARRAY (core->arena, most, struct fact),
-                         ARENA_ARRAY (core->arena, most, bool) };
+  struct doubt doubt = { arena, *network, ARENA_ARRAY (arena, most, struct fact),
+                         ARENA_ARRAY (arena, most, bool) };
   memcpy (doubt.facts, network->fact, network->facts * sizeof *doubt.facts);
   memcpy (doubt.take, take, network->facts * sizeof *doubt.take);
   doubt.take[suspect->fact] = false;
@@ -133,24 +133,11 @@ flows_forward (const struct core *core, const double v[])
   return true;
 }
 
-bool
-suspect_need (const struct core *core, const bool take[], struct suspect *suspect,
-              struct fault *fault)
+/* Asks the rest, which agrees.  */
+static void
+ask (const struct core *rest, struct suspect *suspect)
 {
-  const struct fact *fact = &core->network->fact[suspect->fact];
-  struct doubt doubt = doubt_make (core, take, suspect);
-  const struct core *rest = core_make (core->arena, &doubt.network, doubt.take, core->options,
-                                       fault);
-  double **v;
-  if (!rest) {
-    return false;
-  }
-  suspect->needed = (double) NAN;
-  suspect->plausible = false;
-  if (!rest->agree) {
-    return true;
-  }
-  v = core_generic (core->arena, rest, POINTS);
+  double **v = core_generic (rest->arena, rest, POINTS);
   suspect->needed = say (rest, suspect, v[0]);
   for (size_t i = 1; i < POINTS; i++) {
     double other = say (rest, suspect, v[i]);
@@ -159,6 +146,83 @@ suspect_need (const struct core *core, const bool take[], struct suspect *suspec
     }
   }
   suspect->plausible = suspect->needed >= 0 && flows_forward (rest, v[0])
-                       && (!is_part (rest, fact) || suspect->needed <= 1);
-  return true;
+                       && (!is_part (rest, &rest->network->fact[suspect->fact])
+                           || suspect->needed <= 1);
+}
+
+bool
+suspect_need (const struct core *core, const struct network *network, const bool take[],
+              struct suspect *suspect, struct fault *fault)
+{
+  struct arena *arena = arena_create ();
+  struct doubt doubt = doubt_make (arena, network, take, suspect);
+  const struct core *rest = core_make (arena, &doubt.network, doubt.take, core->options, fault);
+  suspect->needed = (double) NAN;
+  suspect->plausible = false;
+  if (rest && rest->agree) {
+    ask (rest, suspect);
+  }
+  arena_destroy (arena);
+  return rest != NULL;
+}
+
+/* Marks the streams of a form, and of a fact.  */
+static void
+mark_form (const struct network *network, const struct form *form, bool used[])
+{
+  for (size_t t = 0; t < form->count; t++) {
+    size_t stream = form->terms[t].column / network->components;
+    if (stream < network->streams) {
+      used[stream] = true;
+    }
+  }
+}
+
+static void
+mark_fact (const struct network *network, const struct fact *fact, bool used[])
+{
+  mark_form (network, &fact->left, used);
+  mark_form (network, &fact->right, used);
+  if (fact->kind == FACT_COMPOSITION || fact->kind == FACT_SHARE) {
+    used[fact->stream] = true;
+  }
+  if (fact->kind == FACT_SHARE) {
+    used[fact->of] = true;
+  }
+}
+
+const struct network *
+network_part (struct arena *arena, const struct network *network, const bool keep[],
+              const bool take[])
+{
+  struct network *part = ARENA_NEW (arena, struct network);
+  struct boundary *boundary = ARENA_ARRAY (arena, network->boundaries + 1, struct boundary);
+  size_t flows = network->streams * network->components;
+  bool *possible = ARENA_ARRAY (arena, flows + 1, bool);
+  bool *used = ARENA_ARRAY (arena, network->streams + 1, bool);
+  for (size_t b = 0; b < network->boundaries; b++) {
+    boundary[b] = network->boundary[b];
+    if (!keep[b]) {
+      boundary[b].kind = BOUNDARY_MIX;
+      boundary[b].inlet_count = boundary[b].outlet_count = 0;
+    }
+    for (size_t i = 0; i < boundary[b].inlet_count; i++) {
+      used[boundary[b].inlets[i]] = true;
+    }
+    for (size_t i = 0; i < boundary[b].outlet_count; i++) {
+      used[boundary[b].outlets[i]] = true;
+    }
+  }
+  for (size_t f = 0; f < network->facts; f++) {
+    if (take[f]) {
+      mark_fact (network, &network->fact[f], used);
+    }
+  }
+  for (size_t j = 0; j < flows; j++) {
+    possible[j] = used[j / network->components] && (!network->possible || network->possible[j]);
+  }
+  *part = *network;
+  part->boundary = boundary;
+  part->possible = possible;
+  return part;
 }
