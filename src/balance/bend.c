@@ -31,13 +31,17 @@ largest (size_t n, const double v[])
   return most;
 }
 
-/* How far along STEP the totals of all split streams stay above nothing; at most 1.  */
+/* What stays above nothing on the way: every flow, the totals of split streams, or nothing.  */
+enum keep { KEEP_FLOWS, KEEP_TOTALS, KEEP_NOTHING };
+
+/* How far along STEP it does, at most 1.  */
 static double
-longest (const struct core *core, const double v[], const double step[])
+longest (const struct core *core, const double v[], const double step[], enum keep keep)
 {
   const struct system *system = core->system;
+  size_t flows = core->network->streams * core->network->components;
   double most = 1;
-  for (size_t i = 0; i < system->bends; i++) {
+  for (size_t i = 0; i < system->bends && keep != KEEP_NOTHING; i++) {
     const struct boundary *b = &core->network->boundary[system->bend[i].boundary];
     for (size_t o = 0; o <= b->outlet_count; o++) {
       size_t stream = o == 0 ? b->inlets[0] : b->outlets[o - 1];
@@ -45,6 +49,11 @@ longest (const struct core *core, const double v[], const double step[])
       if (total > 0 && by < 0) {
         most = fmin (most, short_of_edge * total / -by);
       }
+    }
+  }
+  for (size_t j = 0; j < flows && keep == KEEP_FLOWS; j++) {
+    if (v[j] > 0 && step[j] < 0) {
+      most = fmin (most, short_of_edge * v[j] / -step[j]);
     }
   }
   return most;
@@ -78,7 +87,7 @@ find_step (struct arena *arena, const struct core *core, const struct rows *bent
 
 /* Damped Newton steps within the linear rows; did V get there?  */
 static bool
-newton (const struct core *core, double v[])
+newton (const struct core *core, enum keep keep, double v[])
 {
   size_t columns = core->system->columns;
   bool done = false;
@@ -91,7 +100,7 @@ newton (const struct core *core, double v[])
     done = before <= converged * largest (columns, v);
     if (!done) {
       find_step (arena, core, &bent, step);
-      part = longest (core, v, step);
+      part = longest (core, v, step, keep);
       for (;; part /= 2, halves++) {
         for (size_t j = 0; j < columns; j++) {
           next[j] = v[j] + part * step[j];
@@ -144,15 +153,32 @@ is_known (const struct core *core, size_t count, double *const roots[], const do
   return false;
 }
 
-/* Where Newton's steps end from several starts, those at an edge last; how many.  */
+/* With all flows above nothing if that ends anywhere, else with less and less regard to them.  */
+static bool
+find_root (const struct core *core, double v[])
+{
+  size_t columns = core->system->columns;
+  double *start = ARENA_ARRAY (core->arena, columns, double);
+  memcpy (start, v, columns * sizeof *start);
+  for (int keep = KEEP_FLOWS; keep <= KEEP_NOTHING; keep++) {
+    memcpy (v, start, columns * sizeof *start);
+    if (newton (core, (enum keep) keep, v)) {
+      return true;
+    }
+  }
+  return false;
+}
+
+/* Where Newton's steps end from several starts, those at an edge only if there are no others; how
+   many.                                                                                         */
 static size_t
-find_roots (struct core *core, double *roots[])
+find_roots (const struct core *core, double *roots[])
 {
   double **start = core_generic (core->arena, core, PROGRAM_SEEDS);
   size_t inner = 0, edge = 0;
   double *edges[PROGRAM_SEEDS];
   for (size_t i = 0; i < PROGRAM_SEEDS; i++) {
-    if (!newton (core, start[i])) {
+    if (!find_root (core, start[i])) {
       continue;
     }
     if (is_at_edge (core, start[i])) {
@@ -165,6 +191,36 @@ find_roots (struct core *core, double *roots[])
     roots[inner++] = edges[0];
   }
   return inner;
+}
+
+/* Solutions near the one at hand, which is one of many: a step of fair size along what is open, in
+   pseudorandom directions, and back by Newton's steps.                                          */
+static void
+look_around (struct core *core)
+{
+  enum { AROUND = 3 };
+  size_t columns = core->system->columns;
+  unsigned long long random = 5;
+  core->root = ARENA_ARRAY (core->arena, AROUND, double *);
+  core->roots = 0;
+  for (size_t n = 0; n < AROUND; n++) {
+    double *v = ARENA_ARRAY (core->arena, columns, double), part;
+    double *step = ARENA_ARRAY (core->arena, columns, double), size = largest (columns, core->v);
+    for (size_t k = 0; k < core->freedom; k++) {
+      random = random * 6364136223846793005ULL + 1442695040888963407ULL;
+      for (size_t j = 0; j < columns; j++) {
+        step[j] += size * ((double) (random >> 40) / (double) (1 << 24) - 0.5)
+                   * core->null[j * core->freedom + k] * core->system->scale[j];
+      }
+    }
+    part = 0.3 * longest (core, core->v, step, KEEP_FLOWS);
+    for (size_t j = 0; j < columns; j++) {
+      v[j] = core->v[j] + part * step[j];
+    }
+    if (find_root (core, v)) {
+      core->root[core->roots++] = v;
+    }
+  }
 }
 
 bool
@@ -181,6 +237,10 @@ core_bend (struct core *core, struct fault *fault)
   core->null = system_narrow (core->arena, core->system, core->v, &core->freedom);
   independent = core->system->freedom - core->freedom;
   core->surplus += bent.count - independent;
+  if (core->freedom > 0) {
+    look_around (core);
+    return true;
+  }
   core->roots = count - 1;
   core->root = ARENA_ARRAY (core->arena, count, double *);
   memcpy (core->root, roots + 1, core->roots * sizeof *core->root);

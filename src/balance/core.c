@@ -168,6 +168,36 @@ find_composition (struct core *core, const struct bend *bend, const double fract
   return split->way == SPLIT_COMPOSED;
 }
 
+/* Fractions that come out in any stream of the split, without the whole composition.  */
+static bool
+find_parts (struct core *core, const struct bend *bend, const double fraction[])
+{
+  size_t components = core->network->components;
+  const struct boundary *b = &core->network->boundary[bend->boundary];
+  struct split *split = &core->split[bend->boundary];
+  bool any = false;
+  if (!split->part) {
+    split->part = ARENA_ARRAY (core->arena, components, double);
+    split->part_from = ARENA_ARRAY (core->arena, components, size_t);
+    for (size_t c = 0; c < components; c++) {
+      split->part[c] = (double) NAN;
+    }
+  }
+  for (size_t i = 0; i <= b->outlet_count; i++) {
+    size_t stream = i == 0 ? bend->inlet : b->outlets[i - 1];
+    for (size_t c = 0; c < components; c++) {
+      double x = fraction[stream * components + c];
+      if (isnan (split->part[c]) && x > 0
+          && !core->system->absence.absent[stream * components + c]) {
+        split->part[c] = x;
+        split->part_from[c] = stream;
+        any = true;
+      }
+    }
+  }
+  return any;
+}
+
 /* Makes splits linear whose composition or share comes out; were there any?  */
 static bool
 straighten (struct core *core)
@@ -184,6 +214,9 @@ straighten (struct core *core)
   }
   for (size_t i = 0; i < core->system->bends && !any; i++) {
     any = find_share (core, &core->system->bend[i], v) || any;
+  }
+  for (size_t i = 0; i < core->system->bends && !any; i++) {
+    any = find_parts (core, &core->system->bend[i], fraction) || any;
   }
   return any;
 }

@@ -38,6 +38,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/reconcile.h \
   %D%/reduce.c \
   %D%/reduce.h \
+  %D%/settle.c \
+  %D%/settle.h \
   %D%/solution.h \
   %D%/solve.c \
   %D%/suggest.c \

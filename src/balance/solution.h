@@ -53,7 +53,8 @@ struct conflict {
   const struct suspect *suspects;
   const bool *around;            /* by boundary: the envelope whose balance does not close */
   size_t component;              /* that is out; `components`: the total is */
-  double gap;                    /* what goes in less what comes out, mol/s */
+  double gap;                    /* what goes in less what comes out, mol/s; NAN, with nothing
+                                    around, where fractions and ratios hold only if nothing flows */
   double p;                      /* of agreement within the digits typed */
 };
 

@@ -9,15 +9,13 @@
 #include "balance/measured.h"
 #include "balance/rank.h"
 #include "balance/reconcile.h"
+#include "balance/settle.h"
 #include "balance/suggest.h"
 #include "support/arena.h"
 #include "support/fault.h"
 
 /* A fact whose row in the left null space is less than this is checked by nothing.  */
 static const double unchecked = 1e-8;
-
-/* How far a figure that was reconciled may still be out, relative.  */
-static const double after_measuring = 1e-6;
 
 static struct count
 count_up (const struct core *core)
@@ -172,54 +170,38 @@ answer (struct arena *keep, const struct core *core, struct fault *fault)
   return solution;
 }
 
-/* What a fact says at a solution, in place of what was measured; nothing flows: as it was.  */
-static struct fact
-settled (struct arena *arena, const struct network *network, const struct fact *fact,
-         const double v[])
+/* Facts may hold only where nothing flows, as when two analyses of a stream differ and its flow is
+   not known.  Either they agree within their digits, and the stream is open after all; or they
+   clash as they would with a flow.                                                              */
+static struct solution *
+solve_exact (struct arena *keep, const struct core *core, struct fault *fault)
 {
-  struct fact out = *fact;
-  size_t components = network->components;
-  double whole = 1, part = form_value (&fact->left, v);
-  double *x = ARENA_ARRAY (arena, components, double);
-  const double *flow = &v[fact->stream * components], *of = &v[fact->of * components];
-  if (fact->kind == FACT_RATIO) {
-    whole = form_value (&fact->right, v);
-  } else if (fact->kind != FACT_FORM) {
-    part = whole = 0;
-    for (size_t c = 0; c < components; c++) {
-      part += flow[c];
-      whole += fact->kind == FACT_SHARE ? of[c] : flow[c];
-    }
+  struct solution *solution;
+  struct idle idle = { core, NULL };
+  if (!idle_look (keep, &idle, fault)) {
+    return NULL;
   }
-  out.u = (double) NAN;
-  out.fractions_u = NULL;
-  if (fabs (whole) > 0) {
-    out.value = part / whole;
-    out.rounding = fabs (out.value) * after_measuring;
-    for (size_t c = 0; c < components && fact->kind == FACT_COMPOSITION; c++) {
-      x[c] = fmax (flow[c] / whole, 0);
-    }
-    out.fractions = fact->kind == FACT_COMPOSITION ? x : fact->fractions;
+  solution = answer (keep, idle.core, fault);
+  if (solution && idle.conflict && !solution->conflict) {
+    solution->status = BALANCE_CONTRADICTORY;
+    solution->conflict = idle.conflict;
   }
-  return out;
+  return solution;
 }
 
 /* The network with what was measured settled by reconciliation.  */
-static struct network
+static const struct network *
 settle (struct arena *arena, const struct network *network, const struct solution *reconciled)
 {
-  struct network out = *network;
-  struct fact *facts = ARENA_ARRAY (arena, network->facts + 1, struct fact);
-  for (size_t f = 0; f < network->facts; f++) {
-    bool moved = fact_is_measured (network, &network->fact[f])
-                 || (reconciled->by_digits && reconciled->by_digits[f]);
-    facts[f] = network->fact[f];
-    if (moved && reconciled->status == BALANCE_RECONCILED) {
-      facts[f] = settled (arena, network, &network->fact[f], reconciled->value);
-    }
+  bool *moved = ARENA_ARRAY (arena, network->facts + 1, bool);
+  if (reconciled->status != BALANCE_RECONCILED) {
+    return network_settle (arena, network, moved, NULL);
   }
-  out.fact = facts;
-  return out;
+  for (size_t f = 0; f < network->facts; f++) {
+    moved[f] = fact_is_measured (network, &network->fact[f])
+               || (reconciled->by_digits && reconciled->by_digits[f]);
+  }
+  return network_settle (arena, network, moved, reconciled->value);
 }
 
 /* Takes over what only reconciliation knows.  */
@@ -254,7 +236,7 @@ solve_measured (struct arena *keep, const struct core *exact, struct fault *faul
 {
   const struct network *network = exact->network;
   struct solution reconciled = { .status = BALANCE_DETERMINED }, *solution = NULL;
-  struct network moved;
+  const struct network *moved;
   bool *take = ARENA_ARRAY (exact->arena, network->facts + 1, bool);
   const struct core *core;
   if (!exact->agree) {
@@ -267,9 +249,9 @@ solve_measured (struct arena *keep, const struct core *exact, struct fault *faul
     take[f] = true;
   }
   moved = settle (exact->arena, network, &reconciled);
-  core = core_make (exact->arena, &moved, take, exact->options, fault);
+  core = core_make (exact->arena, moved, take, exact->options, fault);
   if (core) {
-    solution = answer (keep, core, fault);
+    solution = solve_exact (keep, core, fault);
   }
   if (solution) {
     take_over (solution, &reconciled);
@@ -291,7 +273,7 @@ network_solve (struct arena *keep, const struct network *network,
   }
   core = core_make (arena, network, take, options, fault);
   if (core) {
-    solution = measured ? solve_measured (keep, core, fault) : answer (keep, core, fault);
+    solution = measured ? solve_measured (keep, core, fault) : solve_exact (keep, core, fault);
   }
   arena_destroy (arena);
   return solution;

@@ -5,6 +5,7 @@
 #include <string.h>
 #include "balance/program.h"
 #include "support/arena.h"
+#include "support/fault.h"
 
 enum { POINTS = 3 };
 
@@ -156,14 +157,19 @@ suspect_need (const struct core *core, const struct network *network, const bool
 {
   struct arena *arena = arena_create ();
   struct doubt doubt = doubt_make (arena, network, take, suspect);
-  const struct core *rest = core_make (arena, &doubt.network, doubt.take, core->options, fault);
+  struct fault own;
+  const struct core *rest;
+  bool stopped;
+  fault_init (&own, arena);
+  rest = core_make (arena, &doubt.network, doubt.take, core->options, &own);
+  stopped = own.kind == MESSAGE_INTERRUPTED && !fault_set (fault, own.kind, NULL, NULL);
   suspect->needed = (double) NAN;
   suspect->plausible = false;
   if (rest && rest->agree) {
     ask (rest, suspect);
   }
   arena_destroy (arena);
-  return rest != NULL;
+  return !stopped;
 }
 
 /* Marks the streams of a form, and of a fact.  */

@@ -237,6 +237,52 @@ composed_rows (struct making *making, size_t boundary, const struct split *split
   }
 }
 
+/* n[stream,c] - x F[stream] = 0, with x found in stream FROM, for all COUNT streams but that and
+   one more, which follows from the balance.                                                     */
+static void
+part_rows (struct making *making, size_t boundary, size_t c, size_t count, const size_t streams[])
+{
+  const struct network *network = making->system->network;
+  const struct split *split = &making->system->split[boundary];
+  size_t from = streams[0], left = count - 2;
+  for (size_t i = 0; i < count; i++) {
+    from = streams[i] == split->part_from[c] ? streams[i] : from;
+  }
+  for (size_t i = 0; i < count && left > 0; i++) {
+    if (streams[i] != from) {
+      builder_add (&making->builder, column_of (network, streams[i], c), 1);
+      builder_stream (&making->builder, network, streams[i], -split->part[c]);
+      builder_close (&making->builder, (struct row) { ROW_SPLIT, boundary, c }, 0);
+      left--;
+    }
+  }
+}
+
+/* A split's outlets that no share ties to the inlet: LEFT of them are bent, one more follows.  What
+   components have a known fraction are linear all the same.                                     */
+static void
+bend (struct making *making, size_t boundary, size_t left, const bool done[])
+{
+  struct system *system = making->system;
+  const struct boundary *b = &system->network->boundary[boundary];
+  const double *part = system->split ? system->split[boundary].part : NULL;
+  size_t *streams = ARENA_ARRAY (making->arena, b->outlet_count + 1, size_t), count = 0;
+  streams[count++] = b->inlets[0];
+  for (size_t o = 0; o < b->outlet_count; o++) {
+    if (!done[o]) {
+      streams[count++] = b->outlets[o];
+    }
+  }
+  for (size_t c = 0; c < system->network->components && part; c++) {
+    if (!isnan (part[c])) {
+      part_rows (making, boundary, c, count, streams);
+    }
+  }
+  for (size_t i = 1; i <= left; i++) {
+    making->bend[system->bends++] = (struct bend) { boundary, streams[0], streams[i] };
+  }
+}
+
 /* Equal compositions of a split: for all outlets but one, which follows from the balance.  */
 static void
 split_rows (struct making *making, size_t boundary)
@@ -255,11 +301,8 @@ split_rows (struct making *making, size_t boundary)
     done[o] = outlet_rows (making, boundary, o);
     left -= done[o] ? 1 : 0;
   }
-  for (size_t o = 0; o < b->outlet_count && left > 0; o++) {
-    if (!done[o] && system_parts (system, b->inlets[0]) > 1) {
-      making->bend[system->bends++] = (struct bend) { boundary, b->inlets[0], b->outlets[o] };
-      left--;
-    }
+  if (left > 0 && system_parts (system, b->inlets[0]) > 1) {
+    bend (making, boundary, left, done);
   }
 }
 
@@ -396,15 +439,18 @@ system_bent (struct arena *arena, const struct system *system, const double v[])
     const struct bend *bend = &system->bend[i];
     double in = system_total (system, v, bend->inlet), out = system_total (system, v, bend->outlet);
     double phi = fabs (in) > 0 ? out / in : 0;
+    const double *part = system->split ? system->split[bend->boundary].part : NULL;
     const double *from = &v[bend->inlet * network->components];
     const double *to = &v[bend->outlet * network->components];
-    size_t largest = 0;
-    for (size_t c = 1; c < network->components; c++) {
-      largest = from[c] > from[largest] ? c : largest;
+    size_t largest = NOWHERE;
+    for (size_t c = 0; c < network->components; c++) {
+      bool open = !part || isnan (part[c]);
+      largest = open && (largest == NOWHERE || from[c] > from[largest]) ? c : largest;
     }
     for (size_t c = 0; c < network->components; c++) {
       double x = fabs (in) > 0 ? from[c] / in : 0;
-      if (c != largest && !system->absence.absent[column_of (network, bend->inlet, c)]) {
+      if (c != largest && (!part || isnan (part[c]))
+          && !system->absence.absent[column_of (network, bend->inlet, c)]) {
         builder_add (&builder, column_of (network, bend->outlet, c), 1);
         builder_stream (&builder, network, bend->outlet, -x);
         builder_add (&builder, column_of (network, bend->inlet, c), -phi);

@@ -42,6 +42,9 @@ struct split {
   size_t from;
   const double *x;               /* by component */
   double *share;                 /* by outlet: known from two totals, else NAN; null: none is */
+  double *part;                  /* by component: its fraction in a bent split, found in stream
+                                    `part_from`, or NAN; null: none is */
+  size_t *part_from;
 };
 
 /* One outlet whose equal composition is bilinear.  */
@@ -77,7 +80,7 @@ struct system *system_make (struct arena *, const struct network *, const bool t
 
 /* The rows of the bends at V: their derivatives, and `right` what they are short of zero, so that
    a step d with rows * d = right is Newton's.  They are one fewer for each outlet than it has
-   components (one follows from the rest).                                                       */
+   components whose fraction is not known (one follows from the rest).                           */
 struct rows system_bent (struct arena *, const struct system *, const double v[]);
 
 /* Row I at V less its right side.  */

@@ -33,6 +33,10 @@ suites += %D%/t_network
 %C%_t_network_SOURCES = %D%/t_network.c
 %C%_t_network_LDADD = $(with_balance)
 
+suites += %D%/t_random
+%C%_t_random_SOURCES = %D%/t_random.c
+%C%_t_random_LDADD = $(with_balance)
+
 suites += %D%/t_rank
 %C%_t_rank_SOURCES = \
   %D%/plant.c \

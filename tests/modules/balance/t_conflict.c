@@ -233,6 +233,44 @@ nothing_flows (void)
   plant_free (plant);
 }
 
+/* Two analyses of a gas whose flow nobody knows: they hold where nothing flows, not elsewhere.  */
+static void
+only_where_nothing_flows (void)
+{
+  struct plant *plant = plant_make ("FPW", 2);
+  const struct solution *solution;
+  plant_boundary (plant, BOUNDARY_SEPARATE, "F", "PW");
+  plant_fraction (plant, 'F', 0, 0.6);
+  plant_fraction (plant, 'F', 0, 0.5);
+  plant_fraction (plant, 'P', 0, 0.9);
+  solution = solve (plant);
+  SAME_INT (solution->status, BALANCE_CONTRADICTORY);
+  NEED (solution->conflict && solution->conflict->count == 2);
+  SAME_INT (solution->conflict->suspects[0].fact, 0);
+  NEAR (solution->conflict->suspects[0].needed, 0.5, 1e-9);
+  NEAR (solution->conflict->suspects[1].needed, 0.6, 1e-9);
+  plant_free (plant);
+}
+
+/* All three fractions, said to three digits one by one: 0.999 of the gas is no reason for it not to
+   flow.                                                                                         */
+static void
+thirds (void)
+{
+  struct plant *plant = plant_make ("FPW", 3);
+  const struct solution *solution;
+  plant_boundary (plant, BOUNDARY_SEPARATE, "F", "PW");
+  for (size_t c = 0; c < 3; c++) {
+    plant->fact[plant_fraction (plant, 'F', c, 0.333)].rounding = 0.0005;
+  }
+  solution = solve (plant);
+  SAME_INT (solution->status, BALANCE_UNDERDETERMINED);
+  CHECK (!solution->fixed_total[0]);
+  NEAR (solution->fraction[0], 1.0 / 3, 1e-9);
+  SAME_INT (solution->count.missing, 4);
+  plant_free (plant);
+}
+
 static const struct test_case cases[] = {
   { "three flows that do not close", three_flows },
   { "figures agree within their digits", agree_within_digits },
@@ -242,6 +280,8 @@ static const struct test_case cases[] = {
   { "shares count as one figure each", shares },
   { "branches of a split with unlike analyses", unlike_branches },
   { "a flow where there is none", nothing_flows },
+  { "analyses that only hold where nothing flows", only_where_nothing_flows },
+  { "fractions that make one within their digits", thirds },
   { NULL, NULL }
 };
 
