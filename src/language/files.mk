@@ -41,6 +41,9 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/commands/define.c \
   %D%/commands/help.c \
   %D%/commands/list.c \
+  %D%/commands/note.c \
+  %D%/commands/note_chart.c \
+  %D%/commands/note_chart.h \
   %D%/commands/open.c \
   %D%/commands/samples.c \
   %D%/commands/save.c \

@@ -6,6 +6,7 @@
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/session_private.h"
+#include "language/tree.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/memory.h"
@@ -41,6 +42,7 @@ kept_destroy (struct session *s)
   }
   arena_destroy (kept->line);
   arena_destroy (kept->spare);
+  arena_destroy (kept->log);
   memory_release (kept);
 }
 
@@ -106,7 +108,7 @@ kept_add (struct session *s, const struct asked *asked, const struct result *res
     .count = asked->count, .taken = result->taken, .notes = result->notes,
     .cautions = result->cautions, .value = *asked->value,
     .steps = asked->ev->workings ? asked->ev->workings->first : NULL,
-    .used = asked->ev->used, .used_count = asked->ev->used_count
+    .used = asked->ev->used, .used_count = asked->ev->used_count, .touched = asked->ev->touched
   };
   kept->answered = true;
   kept->last = answer;
@@ -124,6 +126,46 @@ kept_extend (struct session *s, const struct result *result, const struct step *
   workings_init (&one, answer->arena);
   workings_add (&one, step);
   *end_of (answer) = one.first;
+}
+
+void
+kept_log (struct session *s, const struct statement *statement)
+{
+  struct kept *kept = s->kept;
+  const bool opens = statement->kind == STATEMENT_OPEN;
+  if (kept->line_count == KEPT_LINES_MOST) {
+    kept->lines_beyond++;
+    return;
+  }
+  if (!kept->log) {
+    kept->log = arena_create ();
+    kept->last_line = &kept->lines;
+  }
+  struct kept_line *line = ARENA_NEW (kept->log, struct kept_line);
+  line->text = arena_string (kept->log, opens ? statement->text : statement->source);
+  if (opens) {
+    line->next = kept->opened;
+    kept->opened = line;
+    return;
+  }
+  *kept->last_line = line;
+  kept->last_line = &line->next;
+  kept->line_count++;
+}
+
+void
+kept_unlog (struct session *s, size_t count)
+{
+  struct kept *kept = s->kept;
+  if (kept->line_count <= count) {
+    return;
+  }
+  kept->last_line = &kept->lines;
+  for (size_t i = 0; i < count; i++) {
+    kept->last_line = &(*kept->last_line)->next;
+  }
+  *kept->last_line = NULL;
+  kept->line_count = count;
 }
 
 /* ---- Settling ---- */

@@ -15,7 +15,10 @@ struct answer; struct arena; struct definition; struct evaluation; struct remark
 struct session; struct statement; struct step;
 
 /* More answers than anybody files.  */
-enum { KEPT_MOST = 500 };
+enum { KEPT_MOST = 500, KEPT_LINES_MOST = 2000 };
+
+/* A statement that ran, as typed; a file that was opened.  */
+struct kept_line { const char *text; struct kept_line *next; };
 
 struct kept_answer {
   struct arena *arena;
@@ -27,6 +30,7 @@ struct kept_answer {
   struct step *steps;                      /* its own; once settled, all in order of dependence */
   struct definition *const *used;          /* before it is settled */
   size_t used_count;
+  unsigned touched;                        /* what it leaned on */
   bool settled;
 };
 
@@ -39,6 +43,9 @@ struct kept {
   size_t count, settled;
   size_t beyond;                           /* answers that no note will have */
   struct kept_answer *last;                /* or null */
+  struct arena *log;                       /* of the lines; or null: none yet */
+  struct kept_line *lines, **last_line, *opened;
+  size_t line_count, lines_beyond;
 };
 
 /* Keeps what a question came to.  EV evaluated it; ANSWERS are its rows in RESULT.  */
@@ -47,6 +54,10 @@ struct asked { const struct evaluation *ev; const struct statement *statement;
 void kept_add (struct session *, const struct asked *, const struct result *);
 /* One more step of the answer in RESULT, which was just kept: it is the last one.  */
 void kept_extend (struct session *, const struct result *, const struct step *);
+/* Keeps the statement that ran, or the file it opened, for a note.  */
+void kept_log (struct session *, const struct statement *);
+/* Takes back what was kept behind the first COUNT lines: the file that held them failed.  */
+void kept_unlog (struct session *, size_t count);
 /* Makes kept answers independent of definitions, which are about to change.  */
 void kept_settle (struct session *);
 /* The same of one, for looking at it.  */

@@ -134,6 +134,13 @@ only_looks (enum statement_kind kind)
          || kind == STATEMENT_SAVE || kind == STATEMENT_EMPTY || kind == STATEMENT_QUIT;
 }
 
+/* Statements a calculation can be run again without.  */
+static bool
+only_prints (enum statement_kind kind)
+{
+  return only_looks (kind) && kind != STATEMENT_ASK && kind != STATEMENT_MONTECARLO;
+}
+
 bool
 session_run (struct session *s, const struct statement *statement, struct result *result,
              struct fault *fault)
@@ -144,9 +151,16 @@ session_run (struct session *s, const struct statement *statement, struct result
   if (!only_looks (statement->kind)) {
     kept_settle (s);
   }
+  const size_t before = s->kept->line_count;
   bool asks = statement->kind == STATEMENT_ASK || statement->kind == STATEMENT_MONTECARLO;
-  return asks ? ask (s, statement, result, fault)
-              : command_run (s, statement, result, fault);
+  bool done = asks ? ask (s, statement, result, fault)
+                   : command_run (s, statement, result, fault);
+  if (!done) {
+    kept_unlog (s, before);
+  } else if (!only_prints (statement->kind)) {
+    kept_log (s, statement);
+  }
+  return done;
 }
 
 int

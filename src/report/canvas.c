@@ -126,13 +126,13 @@ canvas_open_svg (struct canvas *canvas, struct text *out, const struct canvas_sh
 {
   *canvas = (struct canvas) { .path = svg_path, .text = svg_text, .end = svg_end, .out = out };
   text_add (out, "<svg xmlns=\"http://www.w3.org/2000/svg\" role=\"img\"");
-  attribute (out, "width", sheet->width);
-  attribute (out, "height", sheet->height);
+  attribute (out, "width", ceil (sheet->width));         /* HTML wants whole numbers */
+  attribute (out, "height", ceil (sheet->height));
   text_add (out, " viewBox=\"0 0 ");
   number_add (out, sheet->width);
   text_add_char (out, ' ');
   number_add (out, sheet->height);
-  text_add (out, "\" font-family=\"sans-serif\">\n");
+  text_add (out, "\" style=\"font-family:sans-serif\">\n");
   title_add (out, "title", sheet->title);
   text_add_char (out, '\n');
   if (sheet->description != NULL) {

@@ -23,6 +23,21 @@ figure_write (struct text *out, const struct report_style *style, double value)
     text_add_char (out, '-');
 }
 
+void
+figure_in_formula (struct text *out, double value, const void *style)
+{
+  const size_t start = out->length;
+  figure_write (out, style, value);
+  const char *figure = out->bytes + start;
+  if (strchr (figure, '.') == NULL || strchr (figure, 'e') != NULL)
+    return;
+  while (out->bytes[out->length - 1] == '0')
+    out->length--;
+  if (out->bytes[out->length - 1] == '.')
+    out->length--;
+  out->bytes[out->length] = '\0';
+}
+
 bool
 figure_is_uncertain (double value, double uncertainty)
 {

@@ -16,6 +16,13 @@ noinst_LIBRARIES += %D%/libreport.a
   %D%/formula.h \
   %D%/help.c \
   %D%/json.c \
+  %D%/note.c \
+  %D%/note.h \
+  %D%/note_bars.c \
+  %D%/note_bars.h \
+  %D%/paper.h \
+  %D%/paper_html.c \
+  %D%/paper_markdown.c \
   %D%/remark.c \
   %D%/report.c \
   %D%/report.h \

@@ -51,6 +51,8 @@ void weight_close (struct text *, const struct report_style *);
 
 /* figure.c: a value to style->digits significant digits, "-" where there is none.  */
 void figure_write (struct text *, const struct report_style *, double value);
+/* The same without end zeros, for a formula; STYLE is a struct report_style.  */
+void figure_in_formula (struct text *, double value, const void *style);
 /* A value to the last digit of its standard uncertainty, which has two; the uncertainty itself
    goes to SPREAD, which may be the same text: then a null byte parts the two.                   */
 void figure_write_uncertain (struct text *, double value, struct text *spread,

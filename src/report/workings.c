@@ -63,22 +63,6 @@ wrapped_add (struct text *out, const struct report_style *style, const char *wor
   text_clear (&shown);
 }
 
-static void
-number_shown (struct text *out, double value, const void *with)
-{
-  struct text digits;
-  text_init (&digits);
-  figure_write (&digits, with, value);
-  if (memchr (digits.bytes, '.', digits.length) && !memchr (digits.bytes, 'e', digits.length)) {
-    while (digits.bytes[digits.length - 1] == '0')
-      digits.length--;
-    if (digits.bytes[digits.length - 1] == '.')
-      digits.length--;
-  }
-  text_add_bytes (out, digits.bytes, digits.length);
-  text_clear (&digits);
-}
-
 /* ---- One step ---- */
 
 struct widths { size_t name, whole, fraction, unit; };
@@ -145,7 +129,7 @@ head_add (struct text *out, const struct report_style *style, const struct step 
 static void
 formula_write (struct text *line, const struct report_style *style, const struct step *step)
 {
-  const struct formula_style figures = { number_shown, style };
+  const struct formula_style figures = { figure_in_formula, style };
   text_add (line, step->formula);
   if (!formula_is_for_terms (step) && step->solved == NULL && *step->formula != '\0') {
     text_add (line, " = ");
@@ -164,7 +148,7 @@ solved_figures (struct text *out, const struct report_style *style, const struct
   for (size_t i = 0; i < step->symbol_count; i++) {
     const struct step_symbol *s = &step->symbols[i];
     text_add_format (&line, "%s%s ", i > 0 ? ", " : "", s->name);
-    number_shown (&line, s->value, style);
+    figure_in_formula (&line, s->value, style);
     if (s->unit != NULL && strcmp (s->unit, "1") != 0)
       text_add_format (&line, " %s", s->unit);
   }
@@ -177,7 +161,7 @@ solved_figures (struct text *out, const struct report_style *style, const struct
 static void
 terms_add (struct text *out, const struct report_style *style, const struct step *step)
 {
-  const struct formula_style figures = { number_shown, style };
+  const struct formula_style figures = { figure_in_formula, style };
   const struct step_column *result = formula_result (step);
   for (size_t t = 0; t < step->term_count; t++) {
     struct text line;
@@ -188,11 +172,11 @@ terms_add (struct text *out, const struct report_style *style, const struct step
       text_add_format (&line, ": %s = ", result->name);
       formula_figures (&line, step, t, &figures);
       text_add (&line, " = ");
-      number_shown (&line, result->at[t], style);
+      figure_in_formula (&line, result->at[t], style);
     }
     for (size_t i = 0; result == NULL && i < step->column_count; i++) {
       text_add_format (&line, "%s%s ", i > 0 ? ", " : ": ", step->columns[i].name);
-      number_shown (&line, step->columns[i].at[t], style);
+      figure_in_formula (&line, step->columns[i].at[t], style);
     }
     wrapped_add (out, style, line.bytes, HANG, HANG + used);
     text_clear (&line);
@@ -302,7 +286,7 @@ budget_add (struct text *out, const struct report_style *style, const struct ans
   text_add (&line, "uncertainty of ");
   text_add (&line, answer->label != NULL ? answer->label : answer->what);
   text_add (&line, ": u = sqrt(sum(u_i^2)) = ");
-  number_shown (&line, answer->budget->uncertainty, style);
+  figure_in_formula (&line, answer->budget->uncertainty, style);
   text_add_format (&line, " %s; u_i = s_i u(x_i); from: JCGM 100:2008, eq. 10", answer->unit);
   wrapped_add (out, style, line.bytes, MARGIN, INDENT);
   for (size_t i = 0; i < answer->budget->count; i++) {
@@ -313,11 +297,11 @@ budget_add (struct text *out, const struct report_style *style, const struct ans
     if (b->of != NULL)
       text_add_format (&line, " of %s", b->of);
     text_add (&line, ": u_i = ");
-    number_shown (&line, b->sensitivity, style);
+    figure_in_formula (&line, b->sensitivity, style);
     text_add (&line, " * ");
-    number_shown (&line, b->u, style);
+    figure_in_formula (&line, b->u, style);
     text_add (&line, " = ");
-    number_shown (&line, b->contribution, style);
+    figure_in_formula (&line, b->contribution, style);
     text_add_format (&line, " %s", answer->unit);
     wrapped_add (out, style, line.bytes, INDENT, HANG);
   }

@@ -4,6 +4,7 @@ noinst_LIBRARIES += %D%/libresult.a
   %D%/balance_verdict.h \
   %D%/chart.h \
   %D%/check_verdict.h \
+  %D%/note.h \
   %D%/result.c \
   %D%/result.h \
   %D%/trend.h \

@@ -9,7 +9,7 @@
 #include <stddef.h>
 #include "support/message.h"
 
-struct arena; struct balance_verdict; struct check_verdict; struct trend;
+struct arena; struct balance_verdict; struct check_verdict; struct note; struct trend;
 struct workings_record;
 
 /* What the uncertainty of a figure is made of: a line for each uncertain figure that moves it, the
@@ -82,6 +82,7 @@ struct result {
   const struct workings_record *workings;     /* of workings; or null */
   const struct trend *trend;                  /* of trend; or null */
   struct help_page *help;
+  struct note *note;                          /* to be written; or null */
   bool quit;
 };
 

@@ -19,6 +19,8 @@ gaswright_LDADD = %D%/libterminal.a $(upto_shell) $(READLINE_LIBS) $(GSL_LIBS)
   %D%/history.h \
   %D%/interrupt.c \
   %D%/interrupt.h \
+  %D%/note_file.c \
+  %D%/note_file.h \
   %D%/options.c \
   %D%/options.def \
   %D%/options.h \

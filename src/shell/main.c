@@ -95,6 +95,8 @@ run_session (const struct options *options, struct output *output, bool at_promp
   } else {
     script_init (&script, session, output);
     script.keep_going = options->keep_going;
+    script.inputs = options->files;
+    script.input_count = options->file_count;
     if (at_prompt)
       prompt_run (&script, options->no_init);
     else

@@ -10,6 +10,7 @@
 #include "result/result.h"
 #include "shell/descriptor.h"
 #include "shell/interrupt.h"
+#include "shell/note_file.h"
 #include "shell/output.h"
 #include "shell/source.h"
 #include "support/arena.h"
@@ -92,15 +93,30 @@ is_listing (const struct statement *statement)
          || statement->kind == STATEMENT_SET;
 }
 
+/* Writes the notes a statement of FILE asked for.  */
+static bool
+write_notes (const struct script *script, const struct statement *statement, const char *file,
+             struct result *result, struct fault *fault)
+{
+  const struct note_inputs inputs = { script->inputs, script->input_count, file };
+
+  if (note_file_write (result, &inputs, fault))
+    return true;
+  fault_place (fault, statement->text != NULL ? statement->text_at : statement->at);
+  return false;
+}
+
 /* Runs a statement; true if it did not fail.  */
 static bool
-run_statement (struct script *script, const struct statement *statement, bool *answered,
-               struct fault *fault)
+run_statement (struct script *script, const struct statement *statement, const char *file,
+               bool *answered, struct fault *fault)
 {
   struct result result;
 
   result_init (&result, script->arena, statement->source);
   if (!session_run (script->session, statement, &result, fault))
+    return false;
+  if (result.note != NULL && !write_notes (script, statement, file, &result, fault))
     return false;
   take_digits (script);
   *answered = *answered || !result_is_empty (&result);
@@ -142,7 +158,7 @@ script_run_line (struct script *script, const struct script_line *line)
     } else if (statement == NULL) {
       break;
     } else if (statement->kind == STATEMENT_EMPTY
-               || run_statement (script, statement, &answered, &fault)) {
+               || run_statement (script, statement, line->file, &answered, &fault)) {
       continue;
     } else if (!is_stopped (line)) {
       tell_fault (script, line, &fault, statement->source, answered);

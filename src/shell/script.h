@@ -16,6 +16,8 @@ struct script {
   struct output *output;
   struct arena *arena;                  /* of the line that runs */
   struct text line;
+  char *const *inputs;                  /* files of the run, which no note may overwrite */
+  size_t input_count;
   bool keep_going;
   bool failed;                          /* something went wrong so far */
   bool quit;                            /* a statement ended the session */

@@ -20,6 +20,7 @@ session_tests = \
   %D%/energy.sh \
   %D%/figures.sh \
   %D%/files.sh \
+  %D%/notes.sh \
   %D%/quarrels.sh \
   %D%/refused.sh \
   %D%/roundtrips.sh \

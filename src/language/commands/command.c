@@ -78,6 +78,8 @@ command_run (struct session *session, const struct statement *s, struct result *
     return block_add (session, s, fault);
   case STATEMENT_END:
     return block_close (session, s, result, fault);
+  case STATEMENT_NOTE:
+    return command_note (session, s, result, fault);
   case STATEMENT_WORKINGS:
     return command_workings (session, s, result, fault);
   case STATEMENT_TRIM:
@@ -88,7 +90,6 @@ command_run (struct session *session, const struct statement *s, struct result *
     return true;
   case STATEMENT_ASK:
   case STATEMENT_MONTECARLO:
-  case STATEMENT_NOTE:
     break;
   }
   return only_read (s, fault);

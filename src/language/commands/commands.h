@@ -21,7 +21,7 @@ bool command_run (struct session *, const struct statement *, struct result *, s
 
 command command_check, command_define, command_normalise, command_set, command_show, command_list,
   command_forget, command_trim, command_trend, command_samples, command_save,
-  command_open, command_help, command_undo, command_solve, command_workings;
+  command_open, command_help, command_undo, command_solve, command_workings, command_note;
 
 /* The cards of `show` (card_*.c).  */
 bool card_of_gas (struct session *, const struct gas_value *, const char *name,

@@ -36,7 +36,7 @@ draws_paths_and_texts (void)
   canvas.end (&canvas);
   SAME_TEXT (out.bytes,
              "<svg xmlns=\"http://www.w3.org/2000/svg\" role=\"img\" width=\"60\" height=\"40\""
-             " viewBox=\"0 0 60 40\" font-family=\"sans-serif\">\n"
+             " viewBox=\"0 0 60 40\" style=\"font-family:sans-serif\">\n"
              "<title>feed &amp; tail</title>\n"
              "<path d=\"M0,10C20,10 20,30.25 40,30.25L50,30.25\" fill=\"none\""
              " stroke=\"#000000\" stroke-width=\"2\"><title>feed &lt;raw&gt;</title></path>\n"
