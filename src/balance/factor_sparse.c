@@ -148,10 +148,10 @@ spread (const struct factor *factor, struct arena *scratch, const double f[], do
   double *x = ARENA_ARRAY (scratch, factor->unknowns + 1, double), size = 0;
   for (size_t j = 0; j < factor->unknowns; j++) {
     x[sparse->fronts.at[j]] = f[j] * sparse->scale[j];
-    size = hypot (size, f[j] * sparse->scale[j]);
+    size += f[j] * sparse->scale[j] * f[j] * sparse->scale[j];
   }
   memset (out, 0, factor->rank * sizeof *out);
-  return !isnan (take_apart (sparse, 0, FACTOR_SETTLED * size, x, out));
+  return !isnan (take_apart (sparse, 0, FACTOR_SETTLED * sqrt (size), x, out));
 }
 
 static void

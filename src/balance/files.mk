@@ -5,6 +5,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/absent.h \
   %D%/agree.c \
   %D%/bend.c \
+  %D%/bounded.c \
+  %D%/bounded.h \
   %D%/column_order.c \
   %D%/column_order.h \
   %D%/conflict.c \

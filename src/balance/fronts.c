@@ -40,6 +40,7 @@ struct merge {
   struct arena *scratch;         /* for one front */
   struct line **exact, **measured;       /* by position: rows that begin there */
   size_t *local, locals;         /* positions of the front in hand, ascending */
+  size_t *other;                 /* room to merge them in */
   size_t *where;                 /* by position: its place among them, 1 too many; 0: none */
 };
 
@@ -114,24 +115,23 @@ line_of_row (struct merge *m, const struct sparse *rows, size_t i, const double 
 
 /* ---- A front ---- */
 
-static int
-ascending (const void *a, const void *b)
-{
-  size_t left = *(const size_t *) a, right = *(const size_t *) b;
-  return (left > right) - (left < right);
-}
-
-/* Collects the positions of the lines.  */
+/* Merges the positions of the lines, each ascending, with those there are.  */
 static void
 collect (struct merge *m, const struct line *lines)
 {
   for (; lines; lines = lines->next) {
-    for (size_t k = 0; k < lines->count; k++) {
-      if (m->where[lines->position[k]] == 0) {
-        m->where[lines->position[k]] = 1;
-        m->local[m->locals++] = lines->position[k];
-      }
+    size_t i = 0, k = 0, count = 0, *to = m->other;
+    while (i < m->locals && k < lines->count) {
+      size_t a = m->local[i], b = lines->position[k];
+      to[count++] = a < b ? a : b;
+      i += a <= b;
+      k += b <= a;
     }
+    memcpy (to + count, m->local + i, (m->locals - i) * sizeof *to);
+    memcpy (to + count + m->locals - i, lines->position + k, (lines->count - k) * sizeof *to);
+    m->locals = count + m->locals - i + lines->count - k;
+    m->other = m->local;
+    m->local = to;
   }
 }
 
@@ -367,7 +367,6 @@ eliminate (struct merge *m, size_t at, struct front *front)
   m->locals = 0;
   collect (m, m->exact[at]);
   collect (m, m->measured[at]);
-  qsort (m->local, m->locals, sizeof *m->local, ascending);
   for (size_t k = 0; k < m->locals; k++) {
     m->where[m->local[k]] = k + 1;
   }
@@ -412,6 +411,7 @@ fronts_make (struct arena *arena, const struct linearised *equations, const doub
   m.exact = ARENA_ARRAY (work, n + 1, struct line *);
   m.measured = ARENA_ARRAY (work, n + 1, struct line *);
   m.local = ARENA_ARRAY (work, n + 1, size_t);
+  m.other = ARENA_ARRAY (work, n + 1, size_t);
   m.where = ARENA_ARRAY (work, n + 1, size_t);
   for (size_t k = 0; k < n; k++) {
     at[column[k]] = k;

@@ -216,15 +216,55 @@ stopped (const struct gross *g, struct fault *fault)
   return false;
 }
 
+/* Marks the boundaries that have one of FORM's streams.  */
+static void
+mark_beside (const struct network *network, const struct form *form, bool beside[])
+{
+  for (size_t i = 0; i < form->count; i++) {
+    size_t stream = form->terms[i].column / network->components;
+    for (size_t b = 0; b < network->boundaries; b++) {
+      const struct boundary *boundary = &network->boundary[b];
+      for (size_t k = 0; k < boundary->inlet_count; k++) {
+        beside[b] = beside[b] || boundary->inlets[k] == stream;
+      }
+      for (size_t k = 0; k < boundary->outlet_count; k++) {
+        beside[b] = beside[b] || boundary->outlets[k] == stream;
+      }
+    }
+  }
+}
+
+/* Where a leak is looked for: everywhere, in a large network beside the figures that stand out, as
+   each takes a solution of its own.  */
+static bool *
+leak_places (struct gross *g, const struct solution *solution)
+{
+  const struct network *network = g->measured->network;
+  bool *beside = ARENA_ARRAY (g->arena, network->boundaries + 1, bool);
+  bool large = g->measured->unknowns > FACTOR_DENSE;
+  for (size_t b = 0; b < network->boundaries; b++) {
+    beside[b] = !large;
+  }
+  for (size_t i = 0; large && i < g->measured->figures; i++) {
+    if (solution->adjustments[i].z > solution->z_critical) {
+      mark_beside (network, &g->measured->figure[i].left, beside);
+      mark_beside (network, &g->measured->figure[i].right, beside);
+    }
+  }
+  return beside;
+}
+
 /* The leaks that stand out as a figure would.  */
 static bool
 find_leaks (struct gross *g, struct solution *solution, struct fault *fault)
 {
   const struct system *system = g->measured->system;
   struct leak *leaks = ARENA_ARRAY (g->arena, system->structure + 1, struct leak);
+  bool *beside = leak_places (g, solution);
   size_t count = 0;
   for (size_t k = 0; k < system->structure; k++) {
-    if (system->rows.row[k].kind == ROW_BALANCE && leak_of (g, k, &leaks[count])) {
+    bool balance = system->rows.row[k].kind == ROW_BALANCE && beside[system->rows.row[k].of];
+    if (balance && leak_of (g, k, &leaks[count])) {
       count += sqrt (leaks[count].drop) > solution->z_critical;
     }
     arena_reset (g->scratch);
@@ -282,11 +322,12 @@ fit_again (struct gross *g, struct arena *fits, struct fit *fit, bool *done, str
   struct fault own;
   struct fit next;
   fault_init (&own, fault->arena);
-  *done = measured_minimise (fits, g->measured, g->options, fit->v, &next, &own);
+  *done = measured_minimise (fits, g->measured, g->options, fit->v, MINIMISE_CLOSE, &next, &own);
   if (own.kind == MESSAGE_INTERRUPTED) {
     *fault = own;
     return false;
   }
+  *done = *done && next.blocked == NOWHERE;
   *fit = *done ? next : *fit;
   return true;
 }

@@ -71,7 +71,8 @@ double *gradient_make (struct arena *, const struct measured *) MUST_CHECK;
 struct tangent {
   struct linearised equations;
   double *c, *e;                 /* by exact row; by measured row: (y - g) / u */
-  double *size;                  /* of each exact row: its largest scaled coefficient */
+  double *size;                  /* of each exact row: its largest scaled coefficient, of a bend a
+                                    usual flow */
   double *terms;                 /* of each exact row: the sum of its terms without their signs */
   size_t bends, held;            /* where in the exact rows these begin */
   const size_t *figure;          /* by measured row */

@@ -10,23 +10,31 @@
 /* Enough for slow linear convergence (a large residual of a bent figure); most need 2 to 6.  */
 enum { STEPS = 200, HALVINGS = 40 };
 
-/* Where a step ends: the weighted figures move by less than CLOSE of their uncertainty and the
-   exact rows are met to MET of their terms.  NOISE: as little may be rounding, if steps no longer
-   shrink.  */
-static const double CLOSE = 1e-9, MET = 1e-12, NOISE = 1e-6;
+/* In the end exact rows are met to MET of their terms.  A move as little as NOISE may be rounding,
+   if steps no longer shrink.  */
+static const double MET = 1e-12, NOISE = 1e-6;
+/* In usual flows: a stream below that which would cross zero stops the search; one below the second
+   does when it has shortened PATIENCE steps in a row.  */
+static const double BLOCKED = 1e-4, SLOWLY = 1e-2;
+enum { PATIENCE = 15 };
+/* Of the merit itself.  */
+static const double ROUNDING = 1e-12;
 /* Rows that miss by more than this share of their terms contradict each other.  */
 static const double AGREED = 1e-9;
 /* How far a step may take a total or a closure towards zero; Armijo's share.  */
 static const double NEAREST = 0.9, DESCENT = 1e-4;
 /* In usual flows: a flow that is next to nothing at the start.  */
 static const double NOTHING = 1e-6;
-enum { PASSES = 3 };
+enum { PASSES = 2 };
 
 struct search {
   struct arena *arena;           /* work: forgotten after each step */
   const struct measured *measured;
   double *v, *trial;             /* by place */
   double *d;                     /* by unknown */
+  size_t limit, blocked;         /* streams: what shortened the last step; what stops the search */
+  size_t before;                 /* what shortened the step before */
+  int times;                     /* in a row */
   double penalty;                /* of what exact rows are short of, each by its own size */
 };
 
@@ -115,6 +123,18 @@ add_step (const struct measured *measured, const double from[], double share, co
   }
 }
 
+/* Is every figure a plain form, and no split bent?  */
+static bool
+is_linear (const struct measured *measured)
+{
+  for (size_t i = 0; i < measured->figures; i++) {
+    if (measured->figure[i].right.count > 0) {
+      return false;
+    }
+  }
+  return measured->system->bends == 0;
+}
+
 /* Equal flows everywhere, then some times the linear problem without bends and closures, ratios
    taken as rows by the flows there are.  */
 static void
@@ -127,7 +147,7 @@ start (struct search *s)
     double flow = measured->flow / (double) measured->network->components;
     s->v[i] = there ? (i < columns ? flow : 1) : 0;
   }
-  for (int pass = 0; pass < PASSES; pass++) {
+  for (int pass = is_linear (measured) ? PASSES - 1 : 0; pass < PASSES; pass++) {
     struct tangent t = tangent_make (s->arena, measured, s->v, true);
     const struct factor *factor = factor_make (s->arena, &t.equations);
     factor_solve (factor, s->arena, t.c, t.e, s->d);
@@ -147,12 +167,32 @@ keep (double now, double then, double share)
   return leaves ? NEAREST / (1 - then / now) : share;
 }
 
+/* The same of the total of a stream; a stream that shortens the step is noted.  */
 static double
-keep_stream (const struct search *s, size_t stream, double share)
+keep_stream (struct search *s, size_t stream, double share)
 {
   const struct system *system = s->measured->system;
-  return keep (system_total (system, s->v, stream), system_total (system, s->trial, stream),
-               share);
+  double kept = keep (system_total (system, s->v, stream), system_total (system, s->trial, stream),
+                      share);
+  s->limit = kept < share ? stream : s->limit;
+  return kept;
+}
+
+/* Of the right side of figure I, and of its closure.  */
+static double
+keep_figure (struct search *s, const struct figure *figure, double share)
+{
+  if (figure->right.count > 0 && !figure_is_void (s->measured, figure)) {
+    double kept = keep (form_value (&figure->right, s->v), form_value (&figure->right, s->trial),
+                        share);
+    size_t stream = figure->right.terms[0].column / s->measured->network->components;
+    s->limit = kept < share ? stream : s->limit;
+    share = kept;
+  }
+  if (figure->closure != NOWHERE) {
+    share = keep (s->v[figure->closure], s->trial[figure->closure], share);
+  }
+  return share;
 }
 
 /* How much of the step keeps every denominator on its side of zero.  */
@@ -162,22 +202,34 @@ longest_share (struct search *s)
   const struct measured *measured = s->measured;
   const struct system *system = measured->system;
   double share = 1;
+  s->limit = NOWHERE;
   add_step (measured, s->v, 1, s->d, s->trial);
   for (size_t i = 0; i < measured->figures; i++) {
-    const struct figure *figure = &measured->figure[i];
-    if (figure->right.count > 0 && !figure_is_void (measured, figure)) {
-      share = keep (form_value (&figure->right, s->v), form_value (&figure->right, s->trial),
-                    share);
-    }
-    if (figure->closure != NOWHERE) {
-      share = keep (s->v[figure->closure], s->trial[figure->closure], share);
-    }
+    share = keep_figure (s, &measured->figure[i], share);
   }
   for (size_t i = 0; i < system->bends; i++) {
     share = keep_stream (s, system->bend[i].inlet, share);
     share = keep_stream (s, system->bend[i].outlet, share);
   }
   return share;
+}
+
+/* Is the stream that shortens the step next to nothing?  */
+static bool
+is_blocked (struct search *s)
+{
+  const struct measured *measured = s->measured;
+  s->times = s->limit == s->before ? s->times + 1 : 1;
+  s->before = s->limit;
+  if (s->limit == NOWHERE || s->limit >= measured->network->streams) {
+    return false;
+  }
+  double least = (s->times < PATIENCE ? BLOCKED : SLOWLY) * measured->flow;
+  if (fabs (system_total (measured->system, s->v, s->limit)) > least) {
+    return false;
+  }
+  s->blocked = s->limit;
+  return true;
 }
 
 /* What the weighted figures change by along the whole step.  */
@@ -218,17 +270,32 @@ slope (struct search *s, const struct tangent *t, const double moved[], double g
   return by - s->penalty * gain;
 }
 
-/* Takes as much of the step as brings the merit down; false if none does.  */
+/* Takes SHARE of the step if that brings the merit down from BEFORE.  */
+static bool
+try_share (struct search *s, double share, double before, double downhill)
+{
+  add_step (s->measured, s->v, share, s->d, s->trial);
+  struct tangent there = tangent_make (s->arena, s->measured, s->trial, false);
+  double after = merit (&there, s->penalty);
+  if (!(after <= before + DESCENT * share * downhill + ROUNDING * before + 1e-18)) {
+    return false;
+  }
+  memcpy (s->v, s->trial, s->measured->places * sizeof *s->v);
+  return true;
+}
+
+/* Takes as much of the step as brings the merit down; false if none does.  The whole step may lead
+   across zero: a ratio of two flows below zero is one, and what is to be held shows only there.  */
 static bool
 take_step (struct search *s, const struct tangent *t, double downhill)
 {
-  double share = longest_share (s), before = merit (t, s->penalty);
+  double before = merit (t, s->penalty);
+  if (try_share (s, 1, before, downhill)) {
+    return true;
+  }
+  double share = longest_share (s);
   for (int i = 0; i < HALVINGS; i++, share /= 2) {
-    add_step (s->measured, s->v, share, s->d, s->trial);
-    struct tangent there = tangent_make (s->arena, s->measured, s->trial, false);
-    double after = merit (&there, s->penalty);
-    if (after <= before + DESCENT * share * downhill + 1e-12 * before + 1e-18) {
-      memcpy (s->v, s->trial, s->measured->places * sizeof *s->v);
+    if (try_share (s, share, before, downhill)) {
       return true;
     }
   }
@@ -247,7 +314,8 @@ largest (const double x[], size_t n)
 
 /* Steps until one hardly moves anything.  */
 static bool
-iterate (struct search *s, const struct solve_options *options, struct fault *fault)
+iterate (struct search *s, const struct solve_options *options, double close, double *end,
+         struct fault *fault)
 {
   double last = HUGE_VAL;
   for (int step = 0; step < STEPS; step++) {
@@ -261,11 +329,17 @@ iterate (struct search *s, const struct solve_options *options, struct fault *fa
     double *moved = moved_figures (s, &t);
     double move = largest (moved, t.equations.measured.count), gain = gained (s, &t);
     bool met = worst_row (&t) < MET || gain < 0.5 * shortfall (&t);
-    if (met && (move < CLOSE || (step > 2 && move < NOISE && move >= last / 2))) {
+    if (met && (move < close || (step > 2 && move < NOISE && move >= last / 2))) {
       add_step (s->measured, s->v, 1, s->d, s->v);
+      *end = move;
       return true;
     }
-    if (!take_step (s, &t, slope (s, &t, moved, gain))) {
+    s->limit = NOWHERE;
+    bool taken = take_step (s, &t, slope (s, &t, moved, gain));
+    if (is_blocked (s)) {
+      return true;
+    }
+    if (!taken) {
       break;
     }
     last = move;
@@ -294,10 +368,10 @@ finish (struct arena *arena, const struct measured *measured, const double v[], 
 
 bool
 measured_minimise (struct arena *arena, const struct measured *measured,
-                   const struct solve_options *options, const double from[], struct fit *fit,
-                   struct fault *fault)
+                   const struct solve_options *options, const double from[], double close,
+                   struct fit *fit, struct fault *fault)
 {
-  struct search s = { .arena = arena_create (), .measured = measured };
+  struct search s = { .arena = arena_create (), .measured = measured, .blocked = NOWHERE };
   s.v = ARENA_ARRAY (arena, measured->places, double);
   s.trial = ARENA_ARRAY (arena, measured->places, double);
   s.d = ARENA_ARRAY (arena, measured->unknowns, double);
@@ -306,9 +380,11 @@ measured_minimise (struct arena *arena, const struct measured *measured,
   } else {
     start (&s);
   }
-  bool done = iterate (&s, options, fault);
+  fit->move = HUGE_VAL;
+  bool done = iterate (&s, options, close, &fit->move, fault);
   if (done) {
     finish (arena, measured, s.v, fit);
+    fit->blocked = s.blocked;
   }
   arena_destroy (s.arena);
   return done;

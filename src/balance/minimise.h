@@ -19,15 +19,23 @@ struct fit {
   const double *v;               /* by place */
   double chi2;
   size_t rows, freedom;          /* figures that count; how many of them are surplus */
+  double move;                   /* the largest move of a figure in the last step, in its u */
+  size_t blocked;                /* a stream that wants to fall below zero, where something is
+                                    divided by it: to be held at zero; the fit is no fit then.
+                                    NOWHERE: none */
   bool agreed;                   /* do the exact rows hold?  Else they contradict each other */
   double mismatch;               /* the largest of any exact row, relative to the usual flow */
   struct tangent tangent;        /* at v */
   const struct factor *factor;
 };
 
-/* FROM: where to start, or null.  Everything lives in ARENA.  Faults: interrupted,
-   not-converged.  */
+/* A step that moves every figure by less than this share of its uncertainty is the last.  */
+#define MINIMISE_CLOSE 1e-9
+
+/* FROM: where to start, or null.  CLOSE: as MINIMISE_CLOSE, or more.  Everything lives in ARENA.
+   Faults: interrupted, not-converged.  */
 bool measured_minimise (struct arena *, const struct measured *, const struct solve_options *,
-                        const double from[], struct fit *, struct fault *) MUST_CHECK;
+                        const double from[], double close, struct fit *, struct fault *)
+  MUST_CHECK;
 
 #endif

@@ -3,6 +3,7 @@
 
 #include <math.h>
 #include <string.h>
+#include "balance/bounded.h"
 #include "balance/gross.h"
 #include "balance/minimise.h"
 #include "balance/solution.h"
@@ -10,11 +11,6 @@
 #include "balance/uncertainty.h"
 #include "support/arena.h"
 #include "support/fault.h"
-
-/* A flow below zero by more than this share of the largest is no rounding.  */
-static const double BELOW = 1e-9;
-/* Rounds of holding flows at zero and letting them go again.  */
-enum { ROUNDS = 50 };
 
 /* One way to read the facts.  */
 struct attempt {
@@ -26,127 +22,11 @@ struct attempt {
   struct fit fit;
 };
 
-/* ---- Flows not below zero ---- */
-
-static double
-largest_flow (const struct measured *measured, const double v[])
-{
-  double most = 0;
-  for (size_t j = 0; j < measured->network->streams * measured->network->components; j++) {
-    most = fmax (most, fabs (v[j]));
-  }
-  return most;
-}
-
-/* A stream whose total is below zero is held as a whole: its fractions say nothing then.  */
-static void
-hold_streams (struct attempt *a, const bool open[], double least)
-{
-  struct measured *measured = a->measured;
-  size_t parts = measured->network->components;
-  for (size_t j = 0; j < measured->network->streams * parts; j++) {
-    bool below = system_total (measured->system, a->fit.v, j / parts) < least;
-    measured->held[j] = measured->held[j] || (below && !open[j]);
-  }
-}
-
-/* Holds at zero what came out below; was there any?  A flow that is open is left alone.  */
 static bool
-hold_negative (struct attempt *a)
-{
-  const struct measured *measured = a->measured;
-  size_t flows = measured->network->streams * measured->network->components;
-  double least = -BELOW * largest_flow (measured, a->fit.v);
-  bool *open = fit_open (a->scratch, measured, &a->fit), any = false;
-  for (size_t j = 0; j < flows; j++) {
-    if (a->fit.v[j] < least && !open[j] && !measured->held[j]) {
-      a->measured->held[j] = any = true;
-    }
-  }
-  if (any) {
-    hold_streams (a, open, least);
-  }
-  arena_reset (a->scratch);
-  return any;
-}
-
-/* Would chi2 fall if the flow held by exact row ROW rose above zero?  */
-static bool
-wants_up (struct attempt *a, size_t row)
-{
-  const struct tangent *t = &a->fit.tangent;
-  size_t m = t->equations.measured.count;
-  double *c = ARENA_ARRAY (a->scratch, t->equations.exact.count + 1, double);
-  double *zero = ARENA_ARRAY (a->scratch, m + 1, double);
-  double *moved = ARENA_ARRAY (a->scratch, m + 1, double), along = 0, size = 0;
-  double *d = gradient_make (a->scratch, a->measured);
-  c[row] = 1;
-  factor_solve (a->fit.factor, a->scratch, c, zero, d);
-  sparse_times (&t->equations.measured, d, moved);
-  for (size_t i = 0; i < m; i++) {
-    along += t->e[i] * moved[i];
-    size += moved[i] * moved[i];
-  }
-  arena_reset (a->scratch);
-  return along > BELOW * a->measured->flow * size;
-}
-
-/* Is the stream of column J held as a whole, though it has several components?  What it would rise
-   with is unknown then.  */
-static bool
-is_held_whole (const struct measured *measured, size_t j)
-{
-  size_t parts = measured->network->components, first = j - j % parts, there = 0;
-  for (size_t k = first; k < first + parts; k++) {
-    there += measured->unknown[k] != NOWHERE;
-    if (measured->unknown[k] != NOWHERE && !measured->held[k]) {
-      return false;
-    }
-  }
-  return there > 1;
-}
-
-/* Lets go the first held flow that wants to rise: Lawson and Hanson, Solving Least Squares Problems
-   (1974), chapter 23.  */
-static bool
-release (struct attempt *a)
-{
-  size_t row = a->fit.tangent.held;
-  for (size_t j = 0; j < a->measured->system->columns; j++) {
-    if (a->measured->held[j] && a->measured->unknown[j] != NOWHERE) {
-      if (!is_held_whole (a->measured, j) && wants_up (a, row)) {
-        a->measured->held[j] = false;
-        return true;
-      }
-      row++;
-    }
-  }
-  return false;
-}
-
-static bool
-minimise (struct attempt *a, const double from[], struct fault *fault)
-{
-  return measured_minimise (a->arena, a->measured, a->options, from, &a->fit, fault);
-}
-
-/* The least sum of squares with no flow below zero.  */
-static bool
-minimise_bounded (struct attempt *a, struct fault *fault)
+minimise_again (struct attempt *a, struct fault *fault)
 {
   a->measured = measured_make (a->arena, a->network, a->standing);
-  if (!minimise (a, NULL, fault)) {
-    return false;
-  }
-  for (int round = 0; round < ROUNDS && a->fit.agreed; round++) {
-    if (!hold_negative (a) && !release (a)) {
-      return true;
-    }
-    if (!minimise (a, a->fit.v, fault)) {
-      return false;
-    }
-  }
-  return !a->fit.agreed || fault_set (fault, MESSAGE_NOT_CONVERGED, "the reconciliation", NULL);
+  return minimise_bounded (a->arena, a->measured, a->options, &a->fit, fault);
 }
 
 /* ---- Figures without uncertainty ---- */
@@ -222,14 +102,14 @@ find_fit (struct attempt *a, struct fault *fault)
   struct fault own;
   fault_init (&own, fault->arena);
   stand_as_stated (a);
-  bool done = minimise_bounded (a, &own);
+  bool done = minimise_again (a, &own);
   bool good = done && fit_is_good (a);
   if (good || own.kind == MESSAGE_INTERRUPTED || !stand_by_digits (a)) {
     if (!done) {
       *fault = own;
     }
   } else {
-    done = minimise_bounded (a, fault) && (!stand_back (a) || minimise_bounded (a, fault));
+    done = minimise_again (a, fault) && (!stand_back (a) || minimise_again (a, fault));
   }
   if (done && !a->fit.agreed) {
     return fault_set (fault, MESSAGE_NOT_CONVERGED, "the reconciliation", NULL);
@@ -264,7 +144,7 @@ fill_streams (struct arena *arena, const struct attempt *a, struct solution *sol
     double flow = system_total (a->measured->system, a->fit.v, s);
     total[s] = !total[s];
     for (size_t j = s * parts; j < (s + 1) * parts; j++) {
-      fixed[j] = !fixed[j] && fabs (flow) > BELOW * a->measured->flow;
+      fixed[j] = !fixed[j] && fabs (flow) > BOUNDED_BELOW * a->measured->flow;
       fraction[j] = fixed[j] ? a->fit.v[j] / flow : (double) NAN;
     }
   }
@@ -280,7 +160,7 @@ columns_where (struct arena *arena, const struct attempt *a, bool held, size_t *
   const struct measured *measured = a->measured;
   size_t *out = ARENA_ARRAY (arena, measured->system->columns + 1, size_t);
   size_t flows = measured->network->streams * measured->network->components;
-  double least = -BELOW * largest_flow (measured, a->fit.v);
+  double least = -BOUNDED_BELOW * fit_largest (measured, &a->fit);
   *count = 0;
   for (size_t j = 0; j < flows; j++) {
     if (held ? measured->held[j] : a->fit.v[j] < least) {

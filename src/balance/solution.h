@@ -70,7 +70,9 @@ struct adjustment {
   enum figure_class class;
   size_t tie;                    /* adjustments with one z share a number; 0: no tie */
 };
-/* A leak or a mistake in a balance, as an explanation beside a meter's fault.  */
+/* A leak or a mistake in a balance, as an explanation beside a meter's fault: SIZE goes in and does
+   not come out, and chi2 would fall by DROP.  In large networks only beside figures that stand
+   out.  */
 struct leak { size_t boundary, component; double size, drop; };
 /* One step of leaving out the figures that stand out most: what was left out, on what grounds (chi2
    and its freedom with it), with which others it could be exchanged, and what comes out without

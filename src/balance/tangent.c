@@ -158,7 +158,8 @@ tangent_make (struct arena *arena, const struct measured *measured, const double
   t.held = t.equations.exact.count;
   add_held (measured, v, &t);
   for (size_t i = 0; i < t.equations.exact.count; i++) {
-    t.size[i] = sparse_row_size (&t.equations.exact, i, measured->scale);
+    bool bend = i >= t.bends && i < t.held;      /* a measure that does not change with v */
+    t.size[i] = bend ? measured->flow : sparse_row_size (&t.equations.exact, i, measured->scale);
   }
   add_measured (arena, measured, v, start, &t);
   return t;

@@ -41,11 +41,11 @@ open_move (struct arena *arena, const struct measured *measured, const struct fi
 static double
 norm_of (const double x[], size_t n)
 {
-  double norm = 0;
+  double sum = 0;
   for (size_t i = 0; i < n; i++) {
-    norm = hypot (norm, x[i]);
+    sum += x[i] * x[i];
   }
-  return norm;
+  return sqrt (sum);
 }
 
 bool *
