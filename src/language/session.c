@@ -100,6 +100,15 @@ session_settings (const struct session *s)
   return &s->settings;
 }
 
+const struct readings *
+session_readings (struct session *s, struct fault *fault)
+{
+  if (!s->readings) {
+    s->readings = readings_create (s->vocabulary.units, s->references, s->options.tables, fault);
+  }
+  return s->readings;
+}
+
 const struct vocabulary *
 session_vocabulary (const struct session *s)
 {

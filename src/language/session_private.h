@@ -96,6 +96,8 @@ struct session {
 };
 
 const struct settings *session_settings (const struct session *);
+/* What a check tries.  Null with FAULT if a user's table of readings cannot be read.  */
+const struct readings *session_readings (struct session *, struct fault *) MUST_CHECK;
 
 /* ---- Definitions (definition.c) ---- */
 

@@ -58,8 +58,9 @@ static const char *const offered_units[] = {
 };
 static const char *const state_words[] = { "dry", "saturated", "ideal", "real", "water", "Z",
                                            "dew point", "site pressure", NULL };
-static const char *const lists[] = { "gases", "streams", "quantities", "units", "components",
-                                     "references", "properties", "settings", NULL };
+static const char *const lists[] = { "gases", "streams", "quantities", "sheets", "balances",
+                                     "units", "components", "references", "readings",
+                                     "properties", "settings", NULL };
 
 /* A search in progress.  */
 struct search {

@@ -293,7 +293,7 @@ add_rule (struct gathering *g, const struct reading_rule *rule, unsigned sides)
                             .at = g->check->question.value->at };
     c->counted = name;
   }
-  c->said = filled (arena, rule->said, side_text (sides), rule->from, rule->to);
+  c->said = reading_sentence (arena, rule, side_text (sides));
 }
 
 /* The state of what the volume is of, where the search began from reference conditions.  */

@@ -7,7 +7,9 @@
 #include "support/arena.h"
 #include "support/fault.h"
 #include "support/number.h"
+#include "support/message.h"
 #include "support/table.h"
+#include "support/text.h"
 #include "units/unit.h"
 
 /* What the words of a change are.  */
@@ -168,7 +170,8 @@ read_row (const struct row *row, struct reading_rule *rule)
 {
   double cost;
   *rule = (struct reading_rule) { .key = table_cell (row->table, row->at, 0),
-                                  .said = cell (row, "said") };
+                                  .said = cell (row, "said"),
+                                  .source = cell (row, "source") };
   if (!table_number (row->table, row->at, table_column (row->table, "cost"), &cost, row->fault)
       || !read_side (row, rule) || !read_change (row, rule)) {
     return false;
@@ -223,6 +226,22 @@ readings_destroy (struct readings *readings)
   if (readings) {
     arena_destroy (readings->arena);       /* READINGS itself lies in it */
   }
+}
+
+const char *
+reading_sentence (struct arena *arena, const struct reading_rule *rule, const char *about)
+{
+  bool reference = rule->change == READING_REFERENCE;
+  const char *at = strcmp (rule->words, "all") == 0 ? "any of the reference conditions"
+                                                    : "one of the usual reference conditions";
+  const char *const facts[MESSAGE_FACTS] = { about, reference ? "a volume" : rule->from,
+                                             reference ? at : rule->to, NULL };
+  struct text text;
+  text_init (&text);
+  message_write (&text, rule->said, facts);
+  const char *said = arena_string (arena, text.bytes);
+  text_clear (&text);
+  return said;
 }
 
 bool

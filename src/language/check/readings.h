@@ -25,7 +25,7 @@ enum reading_side { READING_COMPUTED = 1, READING_STATED = 2, READING_EITHER = 3
                     READING_BOTH = 4 };
 
 struct reading_rule {
-  const char *key, *said;
+  const char *key, *said, *source;
   enum reading_change change;
   enum reading_side side;
   int cost;
@@ -40,6 +40,9 @@ struct readings { struct reading_rule *at; size_t count; struct arena *arena; };
 struct readings *readings_create (struct unit_table *, const struct reference_table *,
                                   const char *directory, struct fault *) MUST_CHECK;
 void readings_destroy (struct readings *);               /* null is allowed */
+/* What a rule says of ABOUT ("the stated figure"); of reference conditions, what they are for.  */
+const char *reading_sentence (struct arena *, const struct reading_rule *, const char *about)
+  MUST_CHECK;
 /* Is NAME among the words of a rule that lists references?  "all" has them all.  */
 bool reading_names (const struct reading_rule *, const char *name) MUST_CHECK;
 

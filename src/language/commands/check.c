@@ -15,16 +15,6 @@
 #include "support/arena.h"
 #include "units/workings.h"
 
-static const struct readings *
-readings_of (struct session *session, struct fault *fault)
-{
-  if (!session->readings) {
-    session->readings = readings_create (session->vocabulary.units, session->references,
-                                         session->options.tables, fault);
-  }
-  return session->readings;
-}
-
 /* An actual volume of dry air: what offers of blowers forget.  */
 static void
 note_inlet (struct check *check, struct result *result)
@@ -137,7 +127,7 @@ command_check (struct session *session, const struct statement *s, struct result
 {
   struct check check;
   struct check_verdict *v = ARENA_NEW (result->arena, struct check_verdict);
-  const struct readings *readings = readings_of (session, fault);
+  const struct readings *readings = session_readings (session, fault);
   if (!readings) {
     fault_place (fault, s->at);
     return false;

@@ -6,6 +6,7 @@
 #include "gas/air.h"
 #include "gas/reference.h"
 #include "gas/species.h"
+#include "language/check/readings.h"
 #include "language/evaluate/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
@@ -113,6 +114,26 @@ list_references (struct session *s, struct result *result)
                   arena_format (result->arena, "%s, %s", r->temperature, r->pressure))[1].text
       = r->title;
   }
+}
+
+/* What a check tries, and where each is known from.  */
+static bool
+list_readings (struct session *s, const struct statement *statement, struct result *result,
+               struct fault *fault)
+{
+  const struct readings *readings = session_readings (s, fault);
+  if (!readings) {
+    fault_place (fault, statement->at);
+    return false;
+  }
+  struct card *card = result_card (result, "readings", count_text (result, readings->count), 2,
+                                   blank);
+  for (size_t i = 0; i < readings->count; i++) {
+    const struct reading_rule *rule = &readings->at[i];
+    const char *said = reading_sentence (result->arena, rule, "a figure");
+    add_text_row (result, card, rule->key, said)[1].text = rule->source;
+  }
+  return true;
 }
 
 static void
@@ -232,6 +253,8 @@ command_list (struct session *session, const struct statement *s, struct result 
     list_components (session, result);
   } else if (strcmp (s->name, "references") == 0) {
     list_references (session, result);
+  } else if (strcmp (s->name, "readings") == 0) {
+    return list_readings (session, s, result, fault);
   } else if (strcmp (s->name, "properties") == 0) {
     list_properties (result);
   } else if (strcmp (s->name, "settings") == 0) {
@@ -239,7 +262,7 @@ command_list (struct session *session, const struct statement *s, struct result 
   } else {
     return fault_set_at (fault, MESSAGE_NAME_UNKNOWN, s->name_at, s->name,
                          "list, or list gases, streams, quantities, sheets, balances, units, "
-                         "components, references, properties, settings");
+                         "components, references, readings, properties, settings");
   }
   return true;
 }
