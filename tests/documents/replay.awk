@@ -46,14 +46,19 @@ function run(    line, n) {
   before = n
 }
 
-index($0, begin) == 1 && !inside { inside = 1; typed = ""; before = 0; session = 0; print; next }
+index($0, begin) == 1 && !inside { inside = 1; block = 0; typed = ""; before = 0; session = 0; print; next }
 index($0, end) == 1 && inside { inside = 0; print; next }
 !inside { print; next }
 /^> / {
   session = 1
   typed = typed from_roff(substr($0, 3)) "\n"
   print
-  if ($0 !~ /([,\\]|\\e)$/)
+  # A block says nothing before its end.
+  if ($0 ~ /^> (balance|sheet) / && $0 !~ /; *end/)
+    block = 1
+  if ($0 ~ /^> end$/)
+    block = 0
+  if ($0 !~ /([,\\]|\\e)$/ && !block)
     run()
   next
 }

@@ -16,6 +16,13 @@ def figure(value):
 def says(row, answer, thing, text):
     """Machines and people both get what ROW asks of ANSWER; else what there is instead."""
     pattern, where = re.compile(row["pattern"]), row["where"]
+    if where == "balance":
+        verdict = thing["balance"]
+        here = [verdict["phrase"], verdict["head"], *(": ".join(one) for one in verdict["says"]),
+                *verdict["redundant"], *verdict["conflict"]]
+        if not any(pattern.search(one) for one in here):
+            return ["nothing like '%s' in JSON:" % row["pattern"], *here]
+        return [] if pattern.search(text) else ["nothing like '%s' in text" % row["pattern"]]
     if where in ("readings", "ruled_out"):
         found = thing["readings"] if where == "readings" else thing["check"]["ruled_out"]
         here = [one["reading"] for one in found]
@@ -35,17 +42,30 @@ def says(row, answer, thing, text):
     return []
 
 
+def of_balance(found, path):
+    """A figure of a verdict: "solve plant/gap/value"."""
+    label, *members = path.split("/")
+    value = found[label][1]["balance"]
+    for member in members:
+        value = value[int(member) if member.isdigit() else member]
+    return value
+
+
 def check(tap, name, tables):
     """Holds one scenario against the tables."""
     statements = session.read("sessions/scenarios/%s.gw" % name)
     objects = session.answers(statements)
     tap.tell(session.faults(objects), name + ": every statement is understood")
     found = session.figures(objects)
+    found.update((thing["statement"], ({"value": None, "unit": ""}, thing))
+                 for thing in objects if "balance" in thing)
     _, text, _ = session.run(statements, "text")
     expected, said, slips = ([row for row in table if row["scenario"] == name]
                              for table in tables)
     for row in expected:
         answer = found.get(row["label"], ({"value": None, "unit": ""}, {}))[0]
+        if "/" in row["label"]:
+            answer = {"value": of_balance(found, row["label"]), "unit": row["unit"]}
         member, kind = ("uncertainty", "rel") if row["kind"] == "u" else ("value", row["kind"])
         wrong = session.off(answer.get(member), float(row["value"]), float(row["tol"]), kind)
         if not wrong and answer["unit"] != row["unit"]:
@@ -56,7 +76,7 @@ def check(tap, name, tables):
         wrong = says(row, answer, thing, text) if answer else "no such answer"
         tap.tell(wrong, "%s says: %s" % (name, row["must"]))
     for row in slips:
-        wrong = [answer["what"] for answer, _ in found.values()
+        wrong = [answer["what"] for answer, _ in found.values() if "what" in answer
                  if not session.off(answer["value"], float(row["value"]), TOLERANCE_OF_SLIP)]
         wrong += [line for line in text.splitlines() if figure(row["value"]).search(line)]
         tap.tell(wrong, "%s: not %s, %s" % (name, row["value"], row["slip"]))

@@ -81,6 +81,28 @@ tell_adjustments (struct verdict_maker *m)
   v->adjustment_count = s->adjustment_count;
 }
 
+/* What kind of uncertainty stands in the table, and who gave way most.  */
+static void
+tell_most_moved (struct verdict_maker *m)
+{
+  const struct solution *s = m->solution;
+  const struct adjustment *most = NULL;
+  double by = 0;
+  for (size_t i = 0; i < s->adjustment_count; i++) {
+    const struct adjustment *a = &s->adjustments[i];
+    double size = fabs (a->moved_to - a->stated);
+    if (a->class == FIGURE_REDUNDANT && size > by) {
+      most = a;
+      by = size;
+    }
+  }
+  const char *moved = !most ? ""
+    : arena_format (m->arena, "; moved most: %s, stated to +/- %.2g %s", figure_name (m, most),
+                    most->stated_u * m->plant->fact[most->fact].per,
+                    m->plant->fact[most->fact].unit);
+  verdict_fact (m, "all uncertainties", arena_format (m->arena, "standard (k = 1)%s", moved));
+}
+
 /* Figures that share the largest z, as one list; *Z says it.  */
 static struct text_list
 standing_out (const struct verdict_maker *m, double *z)
@@ -224,6 +246,7 @@ verdict_reconciled (struct verdict_maker *m)
                             s->freedom, s->chi2, s->critical, s->p,
                             s->passed ? "they agree" : "THEY DO NOT AGREE, a gross error");
   tell_adjustments (m);
+  tell_most_moved (m);
   if (s->freedom > 0) {
     tell_who (m);
   }
