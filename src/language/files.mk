@@ -10,6 +10,8 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/balance/plant_network.c \
   %D%/balance/plant_private.h \
   %D%/balance/plant_reading.c \
+  %D%/balance/plant_record.c \
+  %D%/balance/plant_record.h \
   %D%/balance/plant_spread.c \
   %D%/balance/verdict.c \
   %D%/balance/verdict_around.c \

@@ -210,6 +210,7 @@ step_copy (struct arena *arena, const struct step *from)
   step->of = copied (arena, from->of);
   step->solved = copied (arena, from->solved);
   step->unit = copied (arena, from->unit);
+  step->source = copied (arena, from->source);
   for (size_t i = 0; i < from->symbol_count; i++) {
     symbols[i] = from->symbols[i];
     symbols[i].unit = copied (arena, symbols[i].unit);
@@ -237,14 +238,20 @@ step_copy (struct arena *arena, const struct step *from)
 /* Steps that are put together for an answer.  */
 struct gathered { struct arena *arena; struct step *first, **last; unsigned long look; };
 
-/* The same figure of the same thing by the same formula was worked out before?  */
+bool
+kept_same_step (const struct step *a, const struct step *b)
+{
+  const char *of_a = a->of ? a->of : "", *of_b = b->of ? b->of : "";
+  return a->kind != STEP_ANSWER && b->kind == a->kind && strcmp (a->name, b->name) == 0
+         && strcmp (of_a, of_b) == 0 && strcmp (a->formula, b->formula) == 0 && !isnan (a->value)
+         && memcmp (&a->value, &b->value, sizeof a->value) == 0;
+}
+
 static bool
 is_there (const struct gathered *g, const struct step *step)
 {
   for (const struct step *s = g->first; s; s = s->next)
-    if (s->kind == step->kind && strcmp (s->formula, step->formula) == 0
-        && strcmp (s->name, step->name) == 0 && !isnan (s->value)
-        && memcmp (&s->value, &step->value, sizeof s->value) == 0 && s->kind != STEP_ANSWER) {
+    if (kept_same_step (s, step)) {
       return true;
     }
   return false;

@@ -62,6 +62,8 @@ void kept_unlog (struct session *, size_t count);
 void kept_settle (struct session *);
 /* The same of one, for looking at it.  */
 void kept_settle_one (struct session *, struct kept_answer *);
+/* The same figure of the same thing by the same formula; never of what was asked.  */
+bool kept_same_step (const struct step *, const struct step *);
 void kept_destroy (struct session *);
 
 #endif

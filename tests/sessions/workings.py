@@ -365,6 +365,44 @@ def others(tap):
               else [repr(objects[-1])[:300]])
 
 
+BALANCE = """
+balance plant
+  mix      dosing:    biogas + recycle = mixed
+  separate membrane:  mixed = sweet + rich
+  split    purge-tee: rich = vent + recycle
+  known biogas = 850 Nm3/h of (CH4 60, CO2 40 mol%)
+  known CO2 of rich = 98 % of CO2 of mixed
+  known vent = 50 % of rich
+  known CH4 of sweet = 97.2 mol%
+end
+solve plant
+workings
+sweet in kg/h
+workings
+"""
+
+
+def balances(tap):
+    """A solved balance, and a stream it made."""
+    solved, workings, answer, after = [thing for thing in answers(BALANCE)][-4:]
+    steps = {step["step"]: step for step in workings.get("workings", [])}
+    wrong = [line for step in steps.values() for line in recompute(step) + unsourced(step)]
+    for name, stream in solved["balance"]["streams"].items():
+        step = steps.get("flow of " + name, {"value": None})
+        if stream["molar_flow"] is not None and step["value"] != stream["molar_flow"]:
+            wrong.append("%s: %r, not %r" % (name, step["value"], stream["molar_flow"]))
+    for name in ("dosing", "membrane", "purge-tee"):
+        if apart(steps["into " + name]["value"], steps["out of " + name]["value"]):
+            wrong.append(name + " is not closed")
+    if steps["degrees of freedom of plant"]["value"] != 0:
+        wrong.append("freedom")
+    tap.check("a balance has its facts, its count and its flows", wrong)
+    tap.check("a stream it made says so",
+              look_at("sweet in kg/h", answer, after)
+              + ([] if any(step["source"] == "solution of balance plant"
+                           for step in after["workings"]) else ["no such step"]))
+
+
 def forms(tap):
     text = PREAMBLE + "850 Nm3/h of raw in kg/h\nworkings\n"
     status, out, _ = run(text, "text")
@@ -399,6 +437,7 @@ def main():
     kept(tap)
     names_once(tap)
     others(tap)
+    balances(tap)
     forms(tap)
     return tap.finish()
 

@@ -6,6 +6,7 @@
 #include <math.h>
 #include <string.h>
 #include "gas/composition.h"
+#include "language/balance/plant_record.h"
 #include "language/session_private.h"
 #include "support/arena.h"
 
@@ -92,6 +93,7 @@ plant_stream_value (struct evaluation *ev, const struct plant *plant, const char
   if (!gas) {
     return false;
   }
+  record_made_stream (ev, plant, name, total);
   *out = value_number (UNSTATED);
   out->kind = VALUE_STREAM;
   out->unit = plant->unit;

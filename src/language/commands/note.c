@@ -134,20 +134,11 @@ pictures (const struct session *s, struct arena *arena)
 /* ---- Results ---- */
 
 static bool
-same_step (const struct step *a, const struct step *b)
-{
-  const char *of_a = a->of ? a->of : "", *of_b = b->of ? b->of : "";
-  return a->kind != STEP_ANSWER && b->kind == a->kind && strcmp (a->name, b->name) == 0
-         && strcmp (of_a, of_b) == 0 && strcmp (a->formula, b->formula) == 0 && !isnan (a->value)
-         && memcmp (&a->value, &b->value, sizeof a->value) == 0;
-}
-
-static bool
 was_shown (const struct note_result *before, const struct step *step)
 {
   for (const struct note_result *r = before; r; r = r->next)
     for (const struct step *s = r->workings->steps; s; s = s->next)
-      if (same_step (s, step)) {
+      if (kept_same_step (s, step)) {
         return true;
       }
   return false;

@@ -3,6 +3,7 @@
 
 #include <string.h>
 #include "language/balance/plant.h"
+#include "language/balance/plant_record.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -106,5 +107,6 @@ command_solve (struct session *session, const struct statement *s, struct result
   for (size_t i = 0; i < ev.used_count; i++) {
     definition_tell (session, ev.used[i], false, result);
   }
+  plant_record (&ev, s, plant, result);
   return true;
 }
