@@ -20,6 +20,7 @@ session_tests = \
   %D%/energy.sh \
   %D%/figures.sh \
   %D%/files.sh \
+  %D%/networks.sh \
   %D%/notes.sh \
   %D%/quarrels.sh \
   %D%/refused.sh \

@@ -1,0 +1,499 @@
+"""Networks made at random, solved through the language: the truth behind them comes back.
+
+A network is simulated first: feeds of known composition, units with known recoveries and shares,
+recycles iterated until they close.  What a plant would know of it is then typed as a balance, in six
+ways: just enough, too little, too much but consistent, too much with one figure wrong, measured with
+noise, measured with noise and one gross error.  The figures to come back are those of the
+simulation, which shares nothing with the program.
+"""
+import math
+import random
+import re
+import sys
+
+import session
+
+SEED = 20261201
+HOUR = 3600.0
+COMPONENTS = ("CH4", "CO2", "N2", "H2", "CO", "O2", "C2H6", "Ar")
+BATCH = 20
+WAYS = ("determined", "short", "redundant", "wrong", "noisy", "gross")
+COUNT = {"determined": 400, "short": 400, "redundant": 500, "wrong": 400, "noisy": 300,
+         "gross": 200}
+
+
+class Network:
+    """Streams s0, s1 ... with component flows in kmol/h, and the units between them."""
+
+    def __init__(self, chance, most):
+        self.chance = chance
+        self.components = COMPONENTS[:chance.randint(1, len(COMPONENTS))]
+        self.flows = []
+        self.feeds = []
+        self.units = []                   # kind, inlets, outlets, parameters
+        self.open = []
+        for _ in range(chance.randint(1, 2)):
+            self.feed()
+        for _ in range(chance.randint(2, most)):
+            self.grow()
+        self.recycle()
+        self.settle()
+        self.used = sorted({s for _, inlets, outlets, _ in self.units for s in inlets + outlets})
+        self.feeds = [s for s in self.feeds if s in self.used]
+
+    def stream(self):
+        """A new stream, empty as yet."""
+        self.flows.append([0.0] * len(self.components))
+        return len(self.flows) - 1
+
+    def feed(self):
+        """A stream from outside."""
+        s = self.stream()
+        self.flows[s] = [self.chance.uniform(1, 100) for _ in self.components]
+        self.feeds.append(s)
+        self.open.append(s)
+        return s
+
+    def grow(self):
+        """One more unit behind what is open."""
+        chance = self.chance
+        kind = chance.choice(("mix", "separate", "separate", "split"))
+        if kind == "mix":
+            if len(self.open) < 2:
+                self.feed()
+            inlets = chance.sample(self.open, 2)
+            outlets, parameters = [self.stream()], None
+        else:
+            inlets = [chance.choice(self.open)]
+            outlets = [self.stream() for _ in range(chance.randint(2, 3))]
+            width = len(self.components) if kind == "separate" else 1
+            parameters = [[chance.uniform(0.05, 0.9 / (len(outlets) - 1)) for _ in range(width)]
+                          for _ in outlets[1:]]
+        self.units.append((kind, inlets, outlets, parameters))
+        for s in inlets:
+            self.open.remove(s)
+        self.open += outlets
+
+    def recycle(self):
+        """Now and then something that leaves goes back into a mixer before it."""
+        mixers = [u for u in self.units if u[0] == "mix"]
+        ends = [s for s in self.open if s not in self.feeds]
+        if mixers and len(ends) > 1 and self.chance.random() < 0.6:
+            s = self.chance.choice(ends)
+            self.chance.choice(mixers)[1].append(s)
+            self.open.remove(s)
+
+    def settle(self):
+        """Component flows, swept until nothing moves."""
+        for _ in range(5000):
+            moved = 0.0
+            for kind, inlets, outlets, parameters in self.units:
+                total = [sum(self.flows[s][c] for s in inlets)
+                         for c in range(len(self.components))]
+                for place, s in enumerate(outlets):
+                    new = [self.out(kind, parameters, place, c) * n for c, n in enumerate(total)]
+                    moved = max(moved, max(abs(a - b) / (abs(a) + 1e-30)
+                                           for a, b in zip(new, self.flows[s])))
+                    self.flows[s] = new
+            if moved < 1e-14:
+                return
+
+    @staticmethod
+    def out(kind, parameters, place, c):
+        """The share of component C that goes to the outlet at PLACE; the last outlet (place 0)
+        takes what the others leave."""
+        if kind == "mix":
+            return 1.0
+        at = c if kind == "separate" else 0
+        if place == 0:
+            return 1.0 - sum(row[at] for row in parameters)
+        return parameters[place - 1][at]
+
+    def total(self, s):
+        """kmol/h."""
+        return sum(self.flows[s])
+
+    def sound(self):
+        """Every stream holds something, and a recycle does not go round for ever."""
+        most = max(self.total(f) for f in self.feeds)
+        return all(1e-4 * most < self.total(s) < 50 * most for s in self.used)
+
+
+def written(value, digits):
+    """VALUE as somebody would type it."""
+    text = "%.*g" % (digits, value)
+    if "e" in text:
+        text = "%.*f" % (max(0, digits - 1 - math.floor(math.log10(abs(value)))), value)
+    return text
+
+
+class Facts:
+    """What is known of a network, as lines; each line with the true value of its figure."""
+
+    def __init__(self, network, name, digits):
+        self.net = network
+        self.name = name
+        self.digits = digits
+        self.lines = []
+
+    def stream(self, s):
+        """The name of a stream, no other network's."""
+        return "%s-s%d" % (self.name, s)
+
+    def add(self, form, value, unit, digits=None):
+        """FORM = VALUE UNIT."""
+        self.lines.append(("known %s = %%s %s" % (form, unit), value, digits or self.digits))
+        return len(self.lines) - 1
+
+    def canonical(self):
+        """Just enough: the feeds whole, every recovery and share."""
+        net = self.net
+        for f in net.feeds:
+            self.add(self.stream(f), net.total(f), "kmol/h")
+            if len(net.components) > 1:
+                parts = [100 * n / net.total(f) for n in net.flows[f]]
+                texts = [written(x, self.digits) for x in parts[:-1]]
+                texts.append("rest")
+                self.lines.append(("known composition of %s = (%s mol%%)" % (
+                    self.stream(f),
+                    ", ".join("%s %s" % pair for pair in zip(net.components, texts))), None, 0))
+        for kind, inlets, outlets, parameters in net.units:
+            if kind == "mix":
+                continue
+            source = self.stream(inlets[0])
+            for place, s in enumerate(outlets[1:]):
+                if kind == "split":
+                    self.add(self.stream(s), 100 * parameters[place][0], "%% of %s" % source)
+                else:
+                    for c, component in enumerate(net.components):
+                        self.add("%s of %s" % (component, self.stream(s)),
+                                 100 * parameters[place][c],
+                                 "%% of %s of %s" % (component, source))
+
+    def extra(self, chance):
+        """One more true fact; its line."""
+        net = self.net
+        made = [s for s in net.used if s not in net.feeds]
+        s = chance.choice(made)
+        c = chance.randrange(len(net.components))
+        kind = chance.choice(("total", "part", "share"))
+        if kind == "total" or (kind == "share" and len(net.components) == 1):
+            return self.add(self.stream(s), net.total(s), "kmol/h")
+        if kind == "part":
+            return self.add("%s of %s" % (net.components[c], self.stream(s)), net.flows[s][c],
+                            "kmol/h")
+        return self.add("%s of %s" % (net.components[c], self.stream(s)),
+                        100 * net.flows[s][c] / net.total(s), "mol%")
+
+    def text(self, wrong=None, factor=1.0):
+        """The balance; the figure of line WRONG is multiplied by FACTOR."""
+        net = self.net
+        lines = ["balance " + self.name]
+        for number, (kind, inlets, outlets, _) in enumerate(net.units):
+            lines.append("  %s u%d: %s = %s" % (
+                kind, number, " + ".join(self.stream(s) for s in inlets),
+                " + ".join(self.stream(s) for s in outlets)))
+        lines.append("  components " + ", ".join(net.components))
+        for number, (form, value, digits) in enumerate(self.lines):
+            if value is None:
+                lines.append("  " + form)
+            else:
+                value *= factor if number == wrong else 1.0
+                lines.append("  " + form.replace("%s", written(value, digits)).replace("%%", "%"))
+        return "\n".join(lines + ["end", "solve " + self.name, ""])
+
+
+class Study:
+    """Runs networks in batches and keeps what was wrong with each."""
+
+    def __init__(self):
+        self.wrong = {way: [] for way in WAYS}
+        self.counts = {}
+        self.suggested = []
+        self.rate = {"noisy alarms": 0, "gross missed": 0, "gross unnamed": 0,
+                     "false clashes": 0, "unseen slips": 0}
+
+    def fail(self, way, name, what):
+        """One thing that is not so."""
+        self.wrong[way].append("%s: %s" % (name, what))
+
+
+def near(got, want, tol):
+    """Both in kmol/h."""
+    return got is not None and abs(got - want) <= tol
+
+
+def flows_of(stream, components):
+    """Component flows in kmol/h of a stream of the answer; None where not fixed."""
+    total = stream.get("molar_flow")
+    fractions = stream.get("fractions") or {}
+    if total is None:
+        return [None] * len(components)
+    return [total * HOUR / 1000 * fractions[c] if fractions.get(c) is not None else None
+            for c in components]
+
+
+def far(facts, balance, tol):
+    """Streams whose flows are not the truth within TOL of it."""
+    net = facts.net
+    wrong = []
+    for s in net.used:
+        truth = net.flows[s]
+        stream = balance["streams"].get(facts.stream(s))
+        if stream is None:
+            wrong.append("%s is missing" % facts.stream(s))
+            continue
+        total = stream.get("molar_flow")
+        if total is None or not near(total * HOUR / 1000, net.total(s), tol * net.total(s)):
+            wrong.append("%s: %r, not %r" % (facts.stream(s), total, net.total(s) / HOUR * 1000))
+            continue
+        for name, got, want in zip(net.components, flows_of(stream, net.components), truth):
+            if not near(got, want, tol * net.total(s)):
+                wrong.append("%s of %s: %r, not %r" % (name, facts.stream(s), got, want))
+    return wrong
+
+
+def make(chance, most):
+    """A network that can be a plant."""
+    while True:
+        network = Network(chance, most)
+        if network.sound():
+            return network
+
+
+def size(chance):
+    """How many units at most: small ones as a rule, now and then a large one."""
+    return chance.choice((3, 4, 5, 6, 8, 8, 10, 12, 20, 60))
+
+
+def told(texts):
+    """The balances that answer, by name, and the faults."""
+    objects = session.answers("".join(texts))
+    return ({thing["balance"]["name"]: thing["balance"] for thing in objects
+             if "balance" in thing}, session.faults(objects))
+
+
+def batches(cases):
+    """CASES, BATCH at a time, with what the program answers to their texts."""
+    for start in range(0, len(cases), BATCH):
+        some = cases[start:start + BATCH]
+        yield some, *told([text for _, text, _ in some])
+
+
+def determined(chance, name):
+    """Just enough; figures of twelve digits."""
+    facts = Facts(make(chance, size(chance)), name, 12)
+    facts.canonical()
+    return facts, facts.text(), None
+
+
+def short(chance, name):
+    """One figure less."""
+    facts = Facts(make(chance, size(chance)), name, 12)
+    facts.canonical()
+    lines = [i for i, line in enumerate(facts.lines) if line[1] is not None]
+    taken = facts.lines.pop(chance.choice(lines))
+    return facts, facts.text(), taken
+
+
+def redundant(chance, name):
+    """A few figures more, all of four digits."""
+    facts = Facts(make(chance, size(chance)), name, 4)
+    facts.canonical()
+    extra = {facts.extra(chance) for _ in range(chance.randint(1, 3))}
+    return facts, facts.text(), extra
+
+
+def wrong(chance, name):
+    """One of them wrong by 6 to 30 %."""
+    facts = Facts(make(chance, size(chance)), name, 4)
+    facts.canonical()
+    extra = [facts.extra(chance) for _ in range(chance.randint(1, 3))]
+    bad = chance.choice(extra)
+    # Of shares near one hundred per cent the slip goes down, so that a share stays one.
+    factor = 1 - chance.uniform(0.06, 0.3)
+    if facts.lines[bad][1] * 1.3 < 90 and chance.random() < 0.5:
+        factor = 1 + chance.uniform(0.06, 0.3)
+    return facts, facts.text(bad, factor), bad
+
+
+def measured(chance, name):
+    """Total flows of every stream, measured to 1 %."""
+    facts = Facts(make(chance, chance.choice((3, 4, 6, 8, 12))), name, 12)
+    facts.net.components = facts.net.components[:1]
+    net = facts.net
+    net.flows = [[sum(flow)] for flow in net.flows]
+    net.units = [("separate" if kind == "split" else kind, i, o, p)
+                 for kind, i, o, p in net.units]
+    for s in net.used:
+        u = 0.01 * net.total(s)
+        facts.lines.append(("known %s = %%s ± %s kmol/h" % (facts.stream(s), written(u, 6)),
+                            net.total(s) + chance.gauss(0, u), 12))
+    return facts
+
+
+def noisy(chance, name):
+    """Measured with noise."""
+    facts = measured(chance, name)
+    return facts, facts.text(), None
+
+
+def gross(chance, name):
+    """Measured with noise, the largest figure far off: by 30 uncertainties."""
+    facts = measured(chance, name)
+    bad = max(range(len(facts.lines)), key=lambda number: facts.lines[number][1])
+    return facts, facts.text(bad, 1 + chance.choice((-0.3, 0.3))), bad
+
+
+def look_determined(study, way, facts, balance, _):
+    """Solved, and as simulated."""
+    if balance["status"] != "determined":
+        study.fail(way, facts.name, "status " + balance["status"])
+    elif balance["degrees_of_freedom"] != 0 or balance["surplus"] != 0:
+        study.fail(way, facts.name, "counts %(degrees_of_freedom)d, %(surplus)d" % balance)
+    for line in far(facts, balance, 1e-7)[:2]:
+        study.fail(way, facts.name, line)
+
+
+def look_short(study, way, facts, balance, _):
+    """Short by one; what is called fixed is as simulated; ranges hold the truth."""
+    net = facts.net
+    if balance["status"] != "underdetermined" or balance["degrees_of_freedom"] != 1:
+        study.fail(way, facts.name, "status %(status)s, short by %(degrees_of_freedom)d" % balance)
+        return
+    for s in net.used:
+        stream = balance["streams"].get(facts.stream(s), {})
+        total = stream.get("molar_flow")
+        if total is not None and not near(total * HOUR / 1000, net.total(s),
+                                          1e-7 * net.total(s)):
+            study.fail(way, facts.name, "%s is not fixed at %r" % (facts.stream(s), total))
+        for part, got, want in zip(net.components, flows_of(stream, net.components),
+                                   net.flows[s]):
+            if got is not None and not near(got, want, 1e-7 * net.total(s)):
+                study.fail(way, facts.name, "%s of %s: fixed at %r" % (part, facts.stream(s), got))
+        limits = balance.get("ranges", {}).get(facts.stream(s))
+        if limits:
+            slack = 1e-7 * net.total(s)
+            flow = net.total(s)
+            least = (limits["least"] or 0.0) * HOUR / 1000
+            greatest = limits["greatest"]
+            if flow < least - slack or (greatest is not None
+                                        and flow > greatest * HOUR / 1000 + slack):
+                study.fail(way, facts.name, "%s: %r lies outside its range" % (
+                    facts.stream(s), flow))
+    if not balance["suggestions"]:
+        study.fail(way, facts.name, "nothing is suggested")
+    else:
+        study.suggested.append((facts, balance["suggestions"][0]))
+
+
+def follow(study, way, chance):
+    """Any one of the facts suggested, told as it is, settles the network."""
+    cases = []
+    for facts, names in study.suggested:
+        what, stream = chance.choice(names).split(" of ")
+        s = int(stream.rsplit("-s", 1)[1])
+        net = facts.net
+        if what == "flow":
+            facts.add(stream, net.total(s), "kmol/h")
+        else:
+            share = net.flows[s][net.components.index(what)] / net.total(s)
+            facts.add("%s of %s" % (what, stream), 100 * share, "mol%")
+        cases.append((facts, facts.text(), facts.lines[-1][0]))
+    for some, balances, faults in batches(cases):
+        study.wrong[way] += faults
+        for facts, _, line in some:
+            status = balances.get(facts.name, {}).get("status")
+            if status != "determined":
+                study.fail(way, facts.name, "%s is no help: %s" % (line, status))
+            else:
+                for one in far(facts, balances[facts.name], 1e-5)[:2]:
+                    study.fail(way, facts.name, one)
+
+
+def look_redundant(study, way, facts, balance, extra):
+    """More than enough, and no clash."""
+    if balance["status"] == "contradictory":
+        study.rate["false clashes"] += 1
+    elif balance["status"] != "redundant" or balance["surplus"] != len(extra):
+        study.fail(way, facts.name, "status %(status)s, %(surplus)d to spare" % balance)
+    else:
+        for line in far(facts, balance, 0.05)[:2]:
+            study.fail(way, facts.name, line)
+
+
+def look_wrong(study, way, facts, balance, bad):
+    """A clash, and the wrong figure is among the lines named."""
+    if balance["status"] != "contradictory":
+        study.rate["unseen slips"] += 1
+        return
+    form = facts.lines[bad][0].split(" = ")[0]
+    if not any(line.startswith(form + " = ") for line in balance["conflict"]):
+        study.fail(way, facts.name, "%s is not in %r" % (form, balance["conflict"]))
+
+
+def look_noisy(study, way, facts, balance, _):
+    """The truth within five uncertainties; false alarms are counted."""
+    if balance["status"] != "reconciled":
+        study.fail(way, facts.name, "status " + balance["status"])
+        return
+    study.rate["noisy alarms"] += not balance["global_test"]["passed"]
+    for s in facts.net.used:
+        stream = balance["streams"][facts.stream(s)]
+        off = stream["molar_flow"] * HOUR / 1000 - facts.net.total(s)
+        if not abs(off) <= 5 * stream["uncertainty"] * HOUR / 1000:
+            study.fail(way, facts.name, "%s is off by %r" % (facts.stream(s), off))
+
+
+def look_gross(study, way, facts, balance, bad):
+    """An alarm, and the culprit among the suspects."""
+    if balance["status"] != "reconciled":
+        study.fail(way, facts.name, "status " + balance["status"])
+        return
+    study.rate["gross missed"] += balance["global_test"]["passed"]
+    form = facts.lines[bad][0].split(" = ")[0]
+    if not balance["global_test"]["passed"]:
+        named = [suspect["statement"] for suspect in balance["suspects"]]
+        study.rate["gross unnamed"] += not any(one.startswith(form + " = ") for one in named)
+
+
+LOOK = {"determined": look_determined, "short": look_short, "redundant": look_redundant,
+        "wrong": look_wrong, "noisy": look_noisy, "gross": look_gross}
+MAKE = {"determined": determined, "short": short, "redundant": redundant, "wrong": wrong,
+        "noisy": noisy, "gross": gross}
+
+
+def run(study, way):
+    """All networks of one way."""
+    chance = random.Random("%d %s" % (SEED, way))
+    cases = [MAKE[way](chance, "%s%d" % (way, number)) for number in range(COUNT[way])]
+    for some, balances, faults in batches(cases):
+        study.wrong[way] += faults
+        for facts, _, hint in some:
+            if facts.name in balances:
+                LOOK[way](study, way, facts, balances[facts.name], hint)
+            else:
+                study.fail(way, facts.name, "no answer")
+    study.counts[way] = len(cases)
+
+
+def main():
+    tap = session.Tap()
+    study = Study()
+    ways = sys.argv[1:] or WAYS
+    for way in ways:
+        run(study, way)
+        tap.tell(study.wrong[way], "%d networks, %s, seed %d" % (study.counts[way], way, SEED))
+    # A slip hides where four digits of the other figures leave room for it.
+    bounds = {"false clashes": ("redundant", 0.001), "unseen slips": ("wrong", 0.01), "noisy alarms": ("noisy", 0.09),
+              "gross missed": ("gross", 0.05), "gross unnamed": ("gross", 0.05)}
+    for rate, (way, bound) in bounds.items():
+        if way in ways:
+            share = study.rate[rate] / study.counts[way]
+            tap.tell("" if share <= bound else "%g" % share, "%s: at most %g of %s" % (
+                rate, bound, way))
+    return tap.finish()
+
+
+if __name__ == "__main__":
+    sys.exit(main())
