@@ -82,7 +82,7 @@ static size_t
 limiting (const struct program *program, size_t k)
 {
   size_t found = NOWHERE;
-  double least = INFINITY;
+  double least = (double) INFINITY;
   for (size_t i = 0; i < program->rows; i++) {
     const double *row = row_at (program, i);
     if (program->bounded[program->basic[i]] && row[1 + k] < -nearly_zero) {
@@ -267,7 +267,7 @@ find_class (struct program *program, size_t n, const double u[], bool bounded, s
   }
   memcpy (&program->direction[program->classes * n], u, n * sizeof *u);
   program->bounded[program->classes] = bounded;
-  program->start[program->classes] = INFINITY;
+  program->start[program->classes] = (double) INFINITY;
   buckets[at] = ++program->classes;
   return program->classes - 1;
 }

@@ -99,9 +99,9 @@ system_solve (const struct system *system, const double right[], double v[])
   double *step = ARENA_ARRAY (arena, r->a.columns + 1, double);
   for (int round = 0; round <= REFINEMENTS; round++) {
     for (size_t i = 0; i < r->a.rows; i++) {
-      long double sum = i < system->structure ? 0 : right[i - system->structure];
+      long double sum = i < system->structure ? 0 : (long double) right[i - system->structure];
       for (size_t e = r->a.start[i]; e < r->a.start[i + 1]; e++) {
-        sum -= (long double) r->a.value[e] * w[r->a.column[e]];
+        sum -= (long double) r->a.value[e] * (long double) w[r->a.column[e]];
       }
       b[i] = (double) sum;
     }
