@@ -1,6 +1,7 @@
 #include "config.h"
 
 #include <math.h>
+#include <gsl/gsl_multimin.h>
 #include "libtest.h"
 #include "metered.h"
 
@@ -294,6 +295,102 @@ closure_is_free (void)
   metered_clear (&closed);
 }
 
+/* ---- Fractions, a recovery and a ratio, against a minimiser that knows nothing of it ---- */
+
+/* Of n0a, n0b, n1a, n1b; stream 2 is what stream 1 leaves of stream 0.  */
+struct separator { double y[8], u[8]; };
+
+static void
+separator_figures (const double n[4], double g[8])
+{
+  double total[3] = { n[0] + n[1], n[2] + n[3], n[0] + n[1] - n[2] - n[3] };
+  g[0] = total[0];
+  g[1] = total[1];
+  g[2] = total[2];
+  g[3] = n[0] / total[0];
+  g[4] = n[2] / total[1];
+  g[5] = (n[0] - n[2]) / total[2];
+  g[6] = n[2] / n[0];
+  g[7] = total[1] / total[2];
+}
+
+static double
+separator_chi2 (const gsl_vector *n, void *data)
+{
+  const struct separator *separator = data;
+  double g[8], chi2 = 0, at[4];
+  for (size_t i = 0; i < 4; i++) {
+    at[i] = gsl_vector_get (n, i);
+  }
+  separator_figures (at, g);
+  for (size_t i = 0; i < 8; i++) {
+    chi2 += pow ((separator->y[i] - g[i]) / separator->u[i], 2);
+  }
+  return chi2;
+}
+
+/* By the simplex of Nelder and Mead, started over so that it does not stop short.  */
+static double
+least_chi2 (struct separator *separator, double n[4])
+{
+  gsl_multimin_function function = { separator_chi2, 4, separator };
+  gsl_multimin_fminimizer *simplex
+    = gsl_multimin_fminimizer_alloc (gsl_multimin_fminimizer_nmsimplex2, 4);
+  double sides[4], chi2 = HUGE_VAL;
+  for (int start = 0; start < 8; start++) {
+    gsl_vector_view from = gsl_vector_view_array (n, 4), side = gsl_vector_view_array (sides, 4);
+    gsl_vector_set_all (&side.vector, start < 4 ? 1 : 0.01);
+    gsl_multimin_fminimizer_set (simplex, &function, &from.vector, &side.vector);
+    for (int i = 0; i < 2000 && gsl_multimin_fminimizer_size (simplex) > 1e-9; i++) {
+      gsl_multimin_fminimizer_iterate (simplex);
+    }
+    for (size_t i = 0; i < 4; i++) {
+      n[i] = gsl_vector_get (simplex->x, i);
+    }
+    chi2 = gsl_multimin_fminimizer_minimum (simplex);
+  }
+  gsl_multimin_fminimizer_free (simplex);
+  return chi2;
+}
+
+static void
+agrees_with_simplex (void)
+{
+  static const double u[8] = { 1, 0.7, 0.6, 0.01, 0.005, 0.02, 0.01, 0.03 };
+  unsigned long long seed = 5;
+  for (size_t draw = 0; draw < 20; draw++) {
+    double n[4] = { 60, 40, 50, 8 };
+    struct separator separator;
+    struct metered plant;
+    struct solution s;
+    int kind;
+    separator_figures (n, separator.y);
+    for (size_t i = 0; i < 8; i++) {             /* some draws with a gross error */
+      separator.u[i] = u[i];
+      separator.y[i] += u[i] * (metered_normal (&seed) + (draw % 4 == 3 && i == 4 ? 10 : 0));
+    }
+    metered_init (&plant, 2, 3);
+    metered_boundary (&plant, BOUNDARY_SEPARATE, "0 = 1 2");
+    for (size_t i = 0; i < 3; i++) {
+      metered_total (&plant, i, separator.y[i], u[i]);
+      metered_fraction (&plant, i, 0, separator.y[3 + i], u[3 + i]);
+    }
+    metered_ratio (&plant, metered_column (&plant, 1, 0), metered_column (&plant, 0, 0),
+                   separator.y[6], u[6]);
+    metered_ratio (&plant, metered_stream (&plant, 1), metered_stream (&plant, 2), separator.y[7],
+                   u[7]);
+    test_about ("draw %zu of seed 5", draw);
+    NEED (metered_reconcile (&plant, &s, &kind));
+    double chi2 = least_chi2 (&separator, n);
+    SAME_INT (s.freedom, 4);
+    NEAR (s.chi2, chi2, 1e-8);
+    for (size_t i = 0; i < 4; i++) {
+      NEAR (s.value[i], n[i], 1e-5);
+    }
+    metered_clear (&plant);
+  }
+}
+
 /* ---- Nothing to reconcile: uncertainties go on by the law of propagation ---- */
 
 static void
@@ -535,6 +632,7 @@ static const struct test_case cases[] = {
   { "an exchanger with its bypass", exchanger_with_bypass },
   { "flows and whole analyses are reconciled together", whole_analyses },
   { "an analysis counts the same before and after closing", closure_is_free },
+  { "fractions and ratios agree with a simplex", agrees_with_simplex },
   { "without surplus the uncertainties are passed on", propagates },
   { "a split of unknown share has one composition", split_of_unknown_share },
   { "a measured share counts", measured_share },
