@@ -105,6 +105,7 @@ newton (const struct core *core, enum keep keep, double v[])
         for (size_t j = 0; j < columns; j++) {
           next[j] = v[j] + part * step[j];
         }
+        system_correct (core->system, core->v, next);
         bent = system_bent (arena, core->system, next);
         if (length (&bent) < before || halves == MOST_HALVES) {
           break;

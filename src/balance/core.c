@@ -14,6 +14,8 @@ static const double same_fraction = 1e-8;
 /* A total below this part of the largest flow is nothing.  */
 static const double no_flow = 1e-10;
 
+/* Entries of a null space that is made without being asked for.  */
+static const size_t modest = 2000000;
 /* Open columns times directions up to which bounds are looked after.  */
 static const size_t few = 20000;
 
@@ -82,6 +84,7 @@ core_generic (struct arena *arena, const struct core *core, size_t count)
       memcpy (v[i], core->v, core->system->columns * sizeof **v);
     } else if (program && program_feasible (program)) {
       program_inside (program, i, v[i]);
+      system_correct (core->system, core->v, v[i]);
     } else {
       wander (core, i + 1, v[i]);
     }
@@ -221,19 +224,6 @@ straighten (struct core *core)
   return any;
 }
 
-/* What the linear rows come to.  */
-static void
-reduce (struct core *core, const bool take[])
-{
-  core->system = system_make (core->arena, core->network, take, core->split);
-  system_reduce (core->arena, core->system, REDUCE_CORE);
-  core->v = ARENA_ARRAY (core->arena, core->system->columns + 1, double);
-  memcpy (core->v, core->system->particular, core->system->columns * sizeof *core->v);
-  core->freedom = core->system->freedom;
-  core->surplus = core->system->surplus;
-  core_agree (core);
-}
-
 void
 core_open (struct core *core)
 {
@@ -241,6 +231,23 @@ core_open (struct core *core)
     system_open (core->arena, core->system);
     core->null = core->system->null;
   }
+}
+
+/* What the linear rows come to.  */
+static void
+reduce (struct core *core, const bool take[])
+{
+  core->system = system_make (core->arena, core->network, take, core->split);
+  system_reduce (core->arena, core->system, REDUCE_CORE);
+  core->null = NULL;
+  if (core->system->freedom * core->system->columns <= modest) {
+    core_open (core);
+  }
+  core->v = ARENA_ARRAY (core->arena, core->system->columns + 1, double);
+  memcpy (core->v, core->system->particular, core->system->columns * sizeof *core->v);
+  core->freedom = core->system->freedom;
+  core->surplus = core->system->surplus;
+  core_agree (core);
 }
 
 /* The linear rows, with all splits that can be made linear, as long as the null space has no more

@@ -4,6 +4,7 @@
 #include <math.h>
 #include <string.h>
 #include "balance/program.h"
+#include "balance/reduce.h"
 #include "support/arena.h"
 
 /* A form whose change along the null space is less than this part of its norm is fixed.  */
@@ -160,6 +161,7 @@ choose_values (struct work *work)
 {
   if (work->feasible) {
     program_inside (work->program, 0, work->value);
+    system_correct (work->core->system, work->core->v, work->value);
   } else {
     program_point (work->program, work->value);
   }
@@ -177,6 +179,7 @@ find_fractions (struct work *work)
     for (size_t i = 0; i < POINTS; i++) {
       v[i] = ARENA_ARRAY (core->arena, work->columns, double);
       program_inside (work->program, i, v[i]);
+      system_correct (core->system, core->v, v[i]);
     }
   }
   core_fractions (core, POINTS, v, work->fraction);

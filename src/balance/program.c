@@ -9,6 +9,8 @@
 
 /* Figures are in units of the largest flow.  */
 static const double nearly_zero = 1e-9;
+/* Flows below zero by less are zero, and solutions with none further below are without any.  */
+static const double rounding = 1e-13, feasible = 1e-11;
 /* Two unit directions that differ by less are one.  */
 static const double same_direction = 1e-12;
 /* A column that the null space moves by less than this is not moved.  */
@@ -136,7 +138,7 @@ begin (struct program *program)
   for (size_t i = 0; i < program->rows; i++) {
     double *row = row_at (program, i);
     row[1 + a] = program->bounded[program->basic[i]] ? 1 : 0;
-    if (program->bounded[program->basic[i]] && row[0] < -nearly_zero
+    if (program->bounded[program->basic[i]] && row[0] < -rounding
         && (worst == NOWHERE || row[0] < row_at (program, worst)[0])) {
       worst = i;
     }
@@ -149,7 +151,7 @@ begin (struct program *program)
     exchange (program, worst, a);
     (void) climb (program);
   }
-  program->feasible = goal[0] > -10 * nearly_zero;
+  program->feasible = goal[0] > -feasible;
   if (program->place[classes] < program->rows && program->feasible) {
     size_t i = program->place[classes], k = 0;
     for (size_t other = 1; other < program->width; other++) {

@@ -8,7 +8,7 @@
 #include "support/arena.h"
 
 /* Rounds of solving for what the rows are still out by.  */
-enum { REFINEMENTS = 2 };
+enum { REFINEMENTS = 3 };
 
 struct reduction {
   struct sparse a;               /* scaled; columns are those present */
@@ -45,23 +45,6 @@ scaled_rows (struct arena *arena, const struct system *system)
   return out;
 }
 
-void
-system_open (struct arena *arena, struct system *system)
-{
-  const struct reduction *r = system->reduction;
-  size_t n = r->a.columns, d = system->freedom;
-  double *x = ARENA_ARRAY (arena, n + 1, double);
-  double *null = ARENA_ARRAY (arena, system->columns * d + 1, double);
-  for (size_t k = 0; k < d; k++) {
-    elimination_null (r->elimination, k, x);
-    for (size_t j = 0; j < n; j++) {
-      null[r->column[j] * d + k] = x[j];
-    }
-  }
-  columns_orthonormal (system->columns, d, d, null, 0, NULL);
-  system->null = null;
-}
-
 /* Multipliers that take rows to nothing: those of facts orthonormal, what only balances say left
    out, those of the structure beside them.                                                      */
 static void
@@ -89,6 +72,24 @@ find_left (struct arena *arena, struct system *system, struct reduction *r)
   system->surplus = kept;
 }
 
+/* Takes the null space out of W, by column of the rows: of all solutions the shortest.  One with
+   nothing in the columns that are free may be far off, and lose digits.                         */
+static void
+shorten (const struct system *system, double w[])
+{
+  const struct reduction *r = system->reduction;
+  size_t d = system->freedom;
+  for (size_t k = 0; k < d && system->null; k++) {
+    double along = 0;
+    for (size_t j = 0; j < r->a.columns; j++) {
+      along += system->null[r->column[j] * d + k] * w[j];
+    }
+    for (size_t j = 0; j < r->a.columns; j++) {
+      w[j] -= along * system->null[r->column[j] * d + k];
+    }
+  }
+}
+
 void
 system_solve (const struct system *system, const double right[], double v[])
 {
@@ -109,6 +110,7 @@ system_solve (const struct system *system, const double right[], double v[])
     for (size_t j = 0; j < r->a.columns; j++) {
       w[j] += step[j];
     }
+    shorten (system, w);
   }
   memset (v, 0, system->columns * sizeof *v);
   for (size_t j = 0; j < r->a.columns; j++) {
@@ -118,23 +120,71 @@ system_solve (const struct system *system, const double right[], double v[])
 }
 
 void
-system_reduce (struct arena *arena, struct system *system, size_t core)
+system_correct (const struct system *system, const double at[], double v[])
 {
-  struct reduction *r = scaled_rows (arena, system);
+  const struct reduction *r = system->reduction;
+  struct arena *arena = arena_create ();
+  double *out = ARENA_ARRAY (arena, r->a.rows + 1, double);
+  double *step = ARENA_ARRAY (arena, r->a.columns + 1, double);
+  for (size_t i = 0; i < r->a.rows; i++) {
+    for (size_t e = r->a.start[i]; e < r->a.start[i + 1]; e++) {
+      size_t j = r->column[r->a.column[e]];
+      out[i] += r->a.value[e] * (v[j] - at[j]) / system->scale[j];
+    }
+  }
+  elimination_solve (r->elimination, out, step);
+  shorten (system, step);
+  for (size_t j = 0; j < r->a.columns; j++) {
+    v[r->column[j]] -= step[j] * system->scale[r->column[j]];
+  }
+  arena_destroy (arena);
+}
+
+/* A solution for the right sides that the system has.  */
+static void
+find_particular (struct arena *arena, struct system *system)
+{
   size_t facts = system->rows.count - system->structure;
   double *right = ARENA_ARRAY (arena, facts + 1, double);
   double *v = ARENA_ARRAY (arena, system->columns + 1, double);
-  r->elimination = elimination_make (arena, &r->a, core);
-  system->reduction = r;
-  system->rank = elimination_rank (r->elimination);
-  system->freedom = r->a.columns - system->rank;
-  find_left (arena, system, r);
   for (size_t i = 0; i < facts; i++) {
     right[i] = system->rows.right[system->structure + i]
                * system->row_scale[system->structure + i];
   }
   system_solve (system, right, v);
   system->particular = v;
+}
+
+void
+system_open (struct arena *arena, struct system *system)
+{
+  const struct reduction *r = system->reduction;
+  size_t n = r->a.columns, d = system->freedom;
+  double *x = ARENA_ARRAY (arena, n + 1, double);
+  double *null = ARENA_ARRAY (arena, system->columns * d + 1, double);
+  for (size_t k = 0; k < d; k++) {
+    elimination_null (r->elimination, k, x);
+    for (size_t j = 0; j < n; j++) {
+      null[r->column[j] * d + k] = x[j];
+    }
+  }
+  columns_orthonormal (system->columns, d, d, null, 0, NULL);
+  system->null = null;
+  if (d > 0) {
+    find_particular (arena, system);
+  }
+}
+
+void
+system_reduce (struct arena *arena, struct system *system, size_t core)
+{
+  struct reduction *r = scaled_rows (arena, system);
+  r->elimination = elimination_make (arena, &r->a, core);
+  system->reduction = r;
+  system->rank = elimination_rank (r->elimination);
+  system->freedom = r->a.columns - system->rank;
+  find_left (arena, system, r);
+  find_particular (arena, system);
 }
 
 void

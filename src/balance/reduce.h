@@ -17,6 +17,8 @@ void system_open (struct arena *, struct system *);
 /* The solution for facts with the scaled RIGHT sides, by fact row, in place of the system's own;
    they must agree.                                                                              */
 void system_solve (const struct system *, const double right[], double v[]);
+/* Makes V a solution again that lost some digits on its way from the solution AT.  */
+void system_correct (const struct system *, const double at[], double v[]);
 /* The multipliers of the structure's rows (scaled) that take those of the facts to nothing.  */
 double *system_multipliers (struct arena *, const struct system *, const double facts[]);
 
