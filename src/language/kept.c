@@ -129,6 +129,27 @@ kept_extend (struct session *s, const struct result *result, const struct step *
 }
 
 void
+kept_add_row (struct session *s, const struct result *result, const struct answer *row)
+{
+  struct kept_answer *answer = s->kept->last;
+  struct answer *first = NULL, **last = &first;
+  if (!answer || answer->arena != result->arena || answer->settled) {
+    return;
+  }
+  /* The rows there belong to the result: they are copied before one is put behind them.  */
+  const struct answer *from = answer->answers;
+  for (size_t i = 0; i <= answer->count; i++) {
+    *last = ARENA_NEW (answer->arena, struct answer);
+    **last = i < answer->count ? *from : *row;
+    (*last)->next = NULL;
+    from = i < answer->count ? from->next : NULL;
+    last = &(*last)->next;
+  }
+  answer->answers = first;
+  answer->count++;
+}
+
+void
 kept_log (struct session *s, const struct statement *statement)
 {
   struct kept *kept = s->kept;

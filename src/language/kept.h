@@ -54,6 +54,8 @@ struct asked { const struct evaluation *ev; const struct statement *statement;
 void kept_add (struct session *, const struct asked *, const struct result *);
 /* One more step of the answer in RESULT, which was just kept: it is the last one.  */
 void kept_extend (struct session *, const struct result *, const struct step *);
+/* Rows behind those of the answer in RESULT, which was just kept; in its arena.  */
+void kept_add_row (struct session *, const struct result *, const struct answer *);
 /* Keeps the statement that ran, or the file it opened, for a note.  */
 void kept_log (struct session *, const struct statement *);
 /* Takes back what was kept behind the first COUNT lines: the file that held them failed.  */

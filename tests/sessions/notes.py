@@ -238,11 +238,24 @@ def odds(tap):
         tap.tell([] if status == 0 and "duty" in code else code + err, "blocks can be run again")
 
 
+def checks(tap):
+    """A check in a note: the stated figure and what would explain it."""
+    with Folder() as folder:
+        folder.run('check 86 Nm3/h of CO2 against 160 kg/h\ncheck 1 kg/h of CO2 against 1 kg/h\n'
+                   'note "n.md"\n')
+        cells = markdown_cells(folder.read("n.md"))[0]
+        tap.tell([] if "160.000 kg/h" in cells and cells.count("read otherwise") >= 6
+                 and "agrees under a reading below" in cells
+                 and "agrees with what is computed" in cells else cells,
+                 "a check has its stated figure and its readings")
+
+
 def main():
     tap = Tap()
     both_forms(tap)
     inputs(tap)
     odds(tap)
+    checks(tap)
     return tap.finish()
 
 

@@ -103,6 +103,25 @@ check_sheet (struct session *session, const struct statement *s, struct result *
   return true;
 }
 
+/* What a note shows of a check: the stated figure, and the readings that would explain it.  */
+static void
+keep_rows (struct session *session, const struct result *result, const struct check_verdict *v)
+{
+  struct answer row = { .what = "stated", .named = true, .value = v->value, .unit = v->unit,
+                        .uncertainty = UNSTATED, .coverage = 1,
+                        .basis = v->outcome == CHECK_HOLDS ? "agrees with what is computed"
+                                 : v->outcome == CHECK_READINGS ? "agrees under a reading below"
+                                                                : "no reading explains it" };
+  kept_add_row (session, result, &row);
+  for (const struct check_reading *r = v->readings; r; r = r->next) {
+    row.what = "read otherwise";
+    row.value = r->value;
+    row.unit = r->unit;
+    row.basis = r->reading;
+    kept_add_row (session, result, &row);
+  }
+}
+
 /* How the stated figure is held against the computed one.  */
 static void
 record_verdict (struct session *session, const struct result *result, const struct check_verdict *v)
@@ -112,9 +131,11 @@ record_verdict (struct session *session, const struct result *result, const stru
   kept_extend (session, result, &(struct step) {
       .name = "stated less computed", .formula = "d = s - c", .value = v->difference,
       .unit = v->unit, .source = STEP_DEFINITION, .symbols = figures, .symbol_count = 2 });
-  kept_extend (session, result, &(struct step) {
-      .name = "deviation", .formula = "e = s/c - 1", .value = v->deviation, .unit = "1",
-      .source = STEP_DEFINITION, .symbols = figures, .symbol_count = 2 });
+  if (isfinite (v->deviation)) {
+    kept_extend (session, result, &(struct step) {
+        .name = "deviation", .formula = "e = s/c - 1", .value = v->deviation, .unit = "1",
+        .source = STEP_DEFINITION, .symbols = figures, .symbol_count = 2 });
+  }
   kept_extend (session, result, &(struct step) {
       .name = "difference up to which they agree", .formula = "", .value = v->limit,
       .unit = v->unit, .source = v->by_digits ? "half the last digit typed, 0.5 % at most"
@@ -146,6 +167,7 @@ command_check (struct session *session, const struct statement *s, struct result
     result_remark (result, MESSAGE_CAUTION_CUSTODY, NULL, NULL);
     result->check = v;
     record_verdict (session, result, v);
+    keep_rows (session, result, v);
   }
   check_release (&check);
   return done;
