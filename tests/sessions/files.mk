@@ -14,6 +14,7 @@ TESTS += $(session_tests)
 session_tests = \
   %D%/air.sh \
   %D%/bad.sh \
+  %D%/balance_forms.sh \
   %D%/balances.sh \
   %D%/claims.sh \
   %D%/contract.sh \

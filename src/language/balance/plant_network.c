@@ -262,6 +262,14 @@ mass_is_known (struct reader_state *r, const struct raw_fact *raw)
                                 "known composition of NAME = GAS");
 }
 
+/* A component said to be there where another line says that it cannot be.  */
+static bool
+says_impossible (const struct raw_fact *raw, const struct fact *fact)
+{
+  return raw->kind != FACT_COMPOSITION && raw->kind != FACT_SHARE && fact->left.count == 0
+         && raw->left.count > 0 && raw->left.at[0].species && fabs (raw->value) > 0;
+}
+
 static bool
 facts_of (struct reader_state *r, const struct plant *base)
 {
@@ -289,6 +297,12 @@ facts_of (struct reader_state *r, const struct plant *base)
       composition_of (r, raw, fact);
     } else if (!form_of (r, &raw->left, &raw->count_left, &work, &fact->left)
                || !form_of (r, &raw->right, &raw->count_right, &work, &fact->right)) {
+      return false;
+    }
+    if (says_impossible (raw, fact)) {
+      fault_set_at (r->ev->fault, MESSAGE_KIND_WRONG, r->line->at,
+                    arena_format (arena, "%s: the stream cannot hold it", raw->about.words),
+                    "its composition, or an absent line, says so");
       return false;
     }
     if (base) {

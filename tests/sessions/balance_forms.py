@@ -1,0 +1,188 @@
+"""Every form a fact of a balance can take, against plain arithmetic; and what becomes of a balance
+when something it leans on changes, when it is taken back, kept and opened again."""
+import math
+import os
+import re
+import sys
+import tempfile
+
+import session
+
+R = 8.314462618                         # J/(mol K), CODATA 2018
+M = {"CH4": 16.043, "CO2": 44.009, "N2": 28.014, "H2": 2.016}  # g/mol, CIAAW 2021, abridged
+DIGESTER = "gas digester = CH4 60, CO2 40 mol%\nset gas model ideal\n"
+ACTUAL = 100 * 2e5 / (R * 293.15) / 1e3         # kmol/h of 100 m3/h at 20 degC, 2 bar(a)
+
+
+def block(*lines, solve="solve"):
+    return "\n".join(["balance case", *lines, "end", solve]) + "\n"
+
+
+def fed(*lines):
+    return block("separate unit: feed = a + b", *lines)
+
+
+# name, statements, question, value, relative tolerance; 3e-5 where molar masses enter
+FORMS = [
+    ("a flow by mass", fed("known feed = 500 kg/h of digester", "known a = 5 kmol/h of digester"),
+     "feed in kmol/h", 500 / (0.6 * M["CH4"] + 0.4 * M["CO2"]), 3e-5),
+    ("an actual volume", fed("known feed = 100 m3/h at 20 degC, 2 bar(a)",
+                             "known composition of feed = digester", "known a = 1 kmol/h of CH4"),
+     "feed in kmol/h", ACTUAL, 1e-9),
+    ("a reference volume without its water",
+     block("separate unit: feed = a + b", "known feed = 90 Nm3/h dry",
+           "known composition of feed = (CH4 90, H2O 10 mol%)", "known a = 1 Nm3/h of CH4"),
+     "feed in Nm3/h", 100, 1e-9),
+    ("a share by mass", fed("known feed = 100 kg/h of digester", "known a = 30 mass% of feed",
+                            "known CH4 of a = 97 mass%"), "a in kg/h", 30, 1e-9),
+    ("a share by amount", fed("known feed = 100 kmol/h of digester", "known a = 30 % of feed",
+                              "known CH4 of a = 97 mol%"), "a in kmol/h", 30, 1e-9),
+    ("a ratio by mass", fed("known feed = 100 kg/h of digester", "known a / b = 0.25 kg/kg",
+                            "known CH4 of a = 90 mol%"), "a in kg/h", 20, 1e-9),
+    ("a sum on the left", fed("known a + b = 100 kmol/h of digester", "known a = 3 * b",
+                              "known CH4 of a = 70 mol%"), "b in kmol/h", 25, 1e-9),
+    ("a share of a sum of parts",
+     fed("known feed = 100 kmol/h of digester", "known a = 50 kmol/h",
+         "known (CH4 of a) / (CH4 of a + CO2 of a) = 97 %"), "CH4 of a in kmol/h", 48.5, 1e-9),
+    ("mg per reference volume",
+     fed("known feed = 1000 Nm3/h of (CH4 50, N2 50 mol%)", "known a = 500 Nm3/h",
+         "known CH4 of b = 1000 mg/Nm3"), "CH4 of b in kg/h", 0.5, 1e-9),
+    ("an energy flow", block("mix unit: a + b = c", "known a = 1 MW gross of CH4",
+                             "known b = 2 MW gross of CH4", "known composition of c = CH4"),
+     "c in MW gross", 3, 1e-9),
+    ("a split by a ratio", block("split tee: feed = a + b", "known feed = 100 kmol/h of digester",
+                                 "known a / b = 3"), "CO2 of b in kmol/h", 10, 1e-9),
+    ("parts of the flow of one component",
+     fed("known feed = 100 kmol/h of digester", "known CH4 of a = 58 kmol/h",
+         "known CO2 of a = 3 kmol/h"), "CO2 of b in kmol/h", 37, 1e-9),
+    ("a stream defined before", "stream feed = 100 kmol/h of digester\n"
+     + fed("known CH4 of a = 97 % of CH4 of feed", "known CO2 of a = 5 % of CO2 of feed"),
+     "a in kmol/h", 60.2, 1e-9),
+    ("what a stream cannot hold", fed("known feed = 100 kmol/h of digester", "absent CO2 of a",
+                                      "known CH4 of a = 50 kmol/h"), "b in kmol/h", 50, 1e-9),
+    ("the same behind known", fed("known feed = 100 kmol/h of digester", "known a without CO2",
+                                  "known CH4 of a = 50 kmol/h"), "b in kmol/h", 50, 1e-9),
+    ("a basis", block("split tee: feed = a + b", "known composition of feed = digester",
+                      "known a = 30 % of feed", "per 10 kmol/h of feed"), "a in kmol/h", 3, 1e-9),
+    ("a conversion", block("react kiln: fuel + blast = exit with CH4 + 2 O2 = CO2 + 2 H2O",
+                           "known fuel = 10 kmol/h of CH4", "known blast = 30 kmol/h of O2",
+                           "known conversion of CH4 in kiln = 97 %"),
+     "CH4 of exit in kmol/h", 0.3, 1e-9),
+    ("the extent of a second reaction",
+     block("react kiln: fuel + blast = exit with CH4 + 2 O2 = CO2 + 2 H2O, 2 H2 + O2 = 2 H2O",
+           "known fuel = 10 kmol/h of (CH4 50, H2 50 mol%)", "known blast = 30 kmol/h of O2",
+           "known conversion of CH4 in kiln = 100 %",
+           "known extent of reaction 2 of kiln = 2 kmol/h"), "O2 of exit in kmol/h", 18, 1e-9),
+    ("a figure with a name", "let share = 30 %\nlet flow = 80 kmol/h\n"
+     + block("split tee: feed = a + b", "known feed = flow of digester", "known a = share of feed"),
+     "a in kmol/h", 24, 1e-9),
+    ("nothing flows", block("mix unit: a + b = c", "known a = 10 kmol/h of digester",
+                            "known composition of b = N2", "known b = 0 kmol/h"),
+     "c in kmol/h", 10, 1e-9),
+]
+
+# half of what 1 m3/h, 0.5 K and 0.02 bar do to 100 m3/h at 20 degC, 2 bar(a), as squares
+METER = math.sqrt(0.01 ** 2 + (0.5 / 293.15) ** 2 + 0.01 ** 2) * ACTUAL
+UNCERTAIN = [
+    ("T and P of a meter",
+     fed("known feed = 100 +/- 1 m3/h at 20 +/- 0.5 degC, 2.0 +/- 0.02 bar(a)",
+         "known composition of feed = digester", "known a = 1 kmol/h of CH4"),
+     "feed in kmol/h", METER, 1e-3),
+    ("an expanded one", fed("known feed = 100 kmol/h +/- 4 (k=2) of N2",
+                            "known a = 30 kmol/h +/- 3 (limits) of N2"),
+     "b in kmol/h", math.hypot(2, 3 / math.sqrt(3)), 1e-6),
+]
+
+
+def forms(tap):
+    for name, words, question, value, tol in FORMS:
+        objects = session.answers(DIGESTER + words + question + "\n")
+        wrong = session.faults(objects)
+        wrong = wrong or session.off(objects[-1]["answers"][0]["value"], value, tol)
+        tap.tell(wrong, "balance form: " + name)
+    for name, words, question, u, tol in UNCERTAIN:
+        objects = session.answers(DIGESTER + words + question + "\n")
+        wrong = session.faults(objects)
+        wrong = wrong or session.off(objects[-1]["answers"][0].get("uncertainty"), u, tol)
+        tap.tell(wrong, "balance uncertainty: " + name)
+
+
+LIVE = DIGESTER + """\
+let q = 800 kmol/h
+balance plant
+  separate membrane: feed = product + tail
+  known feed = q of digester
+  known CH4 of product = 97.00 mol%
+  known CH4 of tail = 2.000 mol%
+end
+solve plant
+stream more = product + 5 kmol/h of N2
+"""
+
+
+def product(q):
+    """What the lever rule gives."""
+    return q * (60 - 2) / (97 - 2)
+
+
+def figure(objects, statement):
+    return [thing["answers"][0]["value"] for thing in objects
+            if thing.get("statement") == statement and "answers" in thing]
+
+
+def live(tap):
+    ask = "product in kmol/h\nmore in kmol/h\n"
+    objects = session.answers(LIVE + ask + "let q = 900 kmol/h\n" + ask + "undo\n" + ask)
+    got = figure(objects, "product in kmol/h") + figure(objects, "more in kmol/h")
+    want = [product(q) for q in (800, 900, 800)]
+    want += [w + 5 for w in want]
+    tap.tell([session.off(g, w, 1e-9) for g, w in zip(got, want) if session.off(g, w, 1e-9)]
+             or ([] if len(got) == 6 else ["%d figures" % len(got)]),
+             "streams of a balance follow what it leans on, and back")
+    objects = session.answers(LIVE + "undo\nundo\nundo\nlist\n")
+    names = [row["name"] for row in objects[-1]["card"]["rows"]]
+    tap.tell([] if names == ["digester", "q"] else [repr(names)],
+             "a balance is one change to take back, its solution another")
+    objects = session.answers(LIVE + "forget more\nforget plant\nlist\n")
+    names = [row["name"] for row in objects[-1]["card"]["rows"]]
+    tap.tell([] if names == ["digester", "q"] else [repr(names)],
+             "a balance that is forgotten takes its streams along")
+    again = LIVE.replace("97.00", "90.00").replace("let q = 800 kmol/h\n", "").split("balance")[1]
+    objects = session.answers(LIVE + "balance" + again.split("stream")[0] + "product in kmol/h\n")
+    tap.tell(session.faults(objects)
+             or session.off(objects[-1]["answers"][0]["value"], 800 * 58 / 88, 1e-9),
+             "a balance of the same name replaces the one before")
+
+
+def kept(tap):
+    with tempfile.TemporaryDirectory() as folder:
+        one, two = (os.path.join(folder, name) for name in ("one.gw", "two.gw"))
+        session.answers(LIVE + 'save "%s"\n' % one)
+        objects = session.answers('open "%s"\nmore in kmol/h\nsave "%s"\n' % (one, two))
+        with open(one, encoding="utf-8") as first, open(two, encoding="utf-8") as second:
+            same = first.read() == second.read()
+    got = figure(objects, "more in kmol/h")
+    tap.tell(([] if same else ["the files differ"]) + session.faults(objects)
+             + [w for w in [session.off(got[0] if got else None, product(800) + 5, 1e-9)] if w],
+             "a balance that is kept and opened says the same")
+
+
+def blocks(tap):
+    status, _, err = session.run("balance plant\nmix dosing: a + b = c\n", "text")
+    tap.tell([] if status == 1 and re.search("closed with 'end'", err) else [err],
+             "an open block at the end of input is an error that says so")
+    status, out, _ = session.run("balance plant\nmix dosing: a + = c\nend\n5 kg in g\n")
+    tap.tell([] if status == 1 and '"block-spoilt"' in out and "5000" in out else [out],
+             "a block whose line failed is not kept")
+
+
+def main():
+    tap = session.Tap()
+    forms(tap)
+    live(tap)
+    kept(tap)
+    blocks(tap)
+    return tap.finish()
+
+
+sys.exit(main())
