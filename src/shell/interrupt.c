@@ -1,6 +1,8 @@
 #include "config.h"
 #include "shell/interrupt.h"
 
+#include <errno.h>
+#include <poll.h>
 #include <signal.h>
 #include <stddef.h>
 
@@ -55,6 +57,24 @@ bool
 interrupt_pending (void)
 {
   return caught != 0;
+}
+
+bool
+interrupt_wait (int fd)
+{
+  struct pollfd input = { .fd = fd, .events = POLLIN };
+  sigset_t held, before;
+  bool readable = false;
+
+  sigemptyset (&held);
+  sigaddset (&held, SIGINT);
+  sigaddset (&held, SIGTERM);
+  sigaddset (&held, SIGHUP);
+  sigprocmask (SIG_BLOCK, &held, &before);
+  while (caught == 0 && !readable)
+    readable = ppoll (&input, 1, NULL, &before) != -1 || errno != EINTR;
+  sigprocmask (SIG_SETMASK, &before, NULL);
+  return caught == 0;
 }
 
 void

@@ -14,6 +14,9 @@ void interrupt_catch (bool at_prompt);
 
 /* Has a signal asked to stop?  */
 bool interrupt_pending (void);
+/* Waits until FD can be read; false if a signal has come, even one just before: those are let in
+   only while it waits, so that none is lost between the look and the wait.                      */
+bool interrupt_wait (int fd);
 void interrupt_forget (void);
 
 /* Raises the signal that came again, with its usual effect; returns if none came.  */

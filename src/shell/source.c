@@ -62,6 +62,11 @@ fill (struct source *source)
     return false;
   if (source->may_wait && source->output != NULL)
     output_flush (source->output);
+  if (source->may_wait && !interrupt_wait (source->fd)) {
+    source->ended = true;
+    source->next = source->end = 0;
+    return false;
+  }
   do
     n = read (source->fd, source->block, BLOCK);
   while (n == -1 && may_try_again (source));
