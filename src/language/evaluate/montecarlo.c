@@ -16,6 +16,9 @@
 /* How often the user's wish to stop is looked for.  */
 enum { TRIALS_AT_A_TIME = 256 };
 
+/* All figures of all trials are kept: 160 MB.  */
+static const size_t MOST_VALUES = 20000000;
+
 /* The coverage probability, and the factor that gives it for a normal distribution.  */
 static const double PROBABILITY = 0.95, NORMAL_FACTOR = 1.959963984540054;
 
@@ -272,6 +275,12 @@ montecarlo_answers (const struct evaluation *first, const struct statement *s,
   if (uncertain == 0) {
     result_remark (first->result, MESSAGE_NOTE_NOTHING_UNCERTAIN, NULL, NULL);
     return true;
+  }
+  if (figures->count > MOST_VALUES / wanted) {
+    fault_set_at (first->fault, MESSAGE_RANGE, s->value->at,
+                  "so many trials of so many figures do not fit in memory", NULL);
+    fault_hint (first->fault, "at most %zu trials of these", MOST_VALUES / figures->count);
+    return false;
   }
   struct trials t = { .first = first, .statement = s, .figures = figures,
                       .settings = *first->settings, .arena = arena_create () };

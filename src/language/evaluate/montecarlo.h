@@ -16,8 +16,8 @@ struct budget; struct evaluation; struct figures; struct statement;
 /* Adds to the result of FIRST, behind each of FIGURES by first order (BUDGETS, as uncertainty.h
    gives them): mean, standard uncertainty and the ends of a 95 % coverage interval, and notes of
    the trials that had no answer and of a first order that misleads.  S says how many trials, and
-   from which seed.  Kinds: interrupted; that of the first trial where fewer than half had an
-   answer.                                                                                       */
+   from which seed.  Kinds: interrupted; range (more figures than can be kept); that of the first
+   trial where fewer than half had an answer.                                                    */
 bool montecarlo_answers (const struct evaluation *first, const struct statement *s,
                          const struct figures *, const struct budget *const budgets[]) MUST_CHECK;
 

@@ -10,6 +10,7 @@
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
+#include "support/message.h"
 
 /* The budget of the first answer to the last of TEXT's statements; null: there is none.  */
 static const struct budget *
@@ -169,6 +170,55 @@ a_long_chain (void)
   with_session (chain);
 }
 
+static int asked_to_stop;
+
+static bool
+stops_at_the_third_look (void)
+{
+  return ++asked_to_stop > 2;
+}
+
+/* The kind of fault of the last of TEXT's statements.  */
+static enum message
+fault_of (struct arena *arena, struct session *session, const char *text)
+{
+  struct parser *parser = parser_create (arena, session_vocabulary (session), text, strlen (text),
+                                         1, BLOCK_NONE);
+  struct statement *s;
+  struct fault fault;
+  fault_init (&fault, arena);
+  while (parser_next (parser, &s, &fault) && s) {
+    struct result result;
+    result_init (&result, arena, s->source);
+    fault_init (&fault, arena);
+    if (!session_run (session, s, &result, &fault)) {
+      return fault.kind;
+    }
+  }
+  return MESSAGE_NONE;
+}
+
+static void
+trials_that_end (void)
+{
+  struct arena *arena = arena_create ();
+  struct fault fault;
+  fault_init (&fault, arena);
+  struct session *session
+    = session_create (&(struct session_options) { NULL, stops_at_the_third_look }, &fault);
+  if (CHECK (session != NULL)) {
+    SAME_INT (fault_of (arena, session, "let x = 1 ± 0.1; montecarlo 1000000 x * x"),
+              MESSAGE_INTERRUPTED);
+    SAME_INT (asked_to_stop, 3);
+    asked_to_stop = -1000;
+    SAME_INT (fault_of (arena, session, "montecarlo 10000000 x in mol/mol, %, kg/kg"),
+              MESSAGE_RANGE);
+    SAME_INT (fault_of (arena, session, "montecarlo 2000 x * x"), MESSAGE_NONE);
+  }
+  session_destroy (session);
+  arena_destroy (arena);
+}
+
 static const struct test_case cases[] = {
   { "a difference of two figures", a_difference },
   { "a part of a list", a_part_of_a_list },
@@ -176,6 +226,7 @@ static const struct test_case cases[] = {
   { "the barometer", the_barometer },
   { "nothing that is uncertain", nothing_uncertain },
   { "a long chain of names", a_long_chain },
+  { "trials that are stopped or too many", trials_that_end },
   { NULL, NULL }
 };
 
