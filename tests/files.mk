@@ -70,7 +70,7 @@ TESTS += $(suites)
 endif
 
 # Speed and memory: make bench.
-EXTRA_PROGRAMS = %D%/bench/equations %D%/bench/measure
+EXTRA_PROGRAMS = %D%/bench/equations %D%/bench/measure %D%/bench/networks
 EXTRA_DIST += %D%/bench/bench.sh
 %C%_bench_measure_SOURCES = %D%/bench/measure.c
 %C%_bench_equations_SOURCES = \
@@ -78,8 +78,15 @@ EXTRA_DIST += %D%/bench/bench.sh
   %D%/bench/plain_gerg.c \
   %D%/bench/plain_gerg.h
 %C%_bench_equations_LDADD = $(upto_eos) $(GSL_LIBS)
-CLEANFILES += %D%/bench/equations$(EXEEXT) %D%/bench/measure$(EXEEXT)
+%C%_bench_networks_SOURCES = \
+  %D%/bench/networks.c \
+  %D%/modules/balance/chain.c \
+  %D%/modules/balance/chain.h
+%C%_bench_networks_CPPFLAGS = $(AM_CPPFLAGS) -I$(top_srcdir)/tests/modules/balance
+%C%_bench_networks_LDADD = $(upto_balance) $(GSL_LIBS)
+CLEANFILES += %D%/bench/equations$(EXEEXT) %D%/bench/measure$(EXEEXT) %D%/bench/networks$(EXEEXT)
 
 .PHONY: bench
-bench: gaswright$(EXEEXT) %D%/bench/equations$(EXEEXT) %D%/bench/measure$(EXEEXT)
+bench: gaswright$(EXEEXT) %D%/bench/equations$(EXEEXT) %D%/bench/measure$(EXEEXT) \
+    %D%/bench/networks$(EXEEXT)
 	$(AM_V_at)GASWRIGHT=./gaswright$(EXEEXT) $(SHELL) $(srcdir)/%D%/bench/bench.sh

@@ -6,6 +6,7 @@ set -eu
 program=${GASWRIGHT:-./gaswright}
 measure=tests/bench/measure
 equations=tests/bench/equations
+networks=tests/bench/networks
 work=$(mktemp -d)
 trap 'rm -rf "$work"' EXIT
 
@@ -113,4 +114,21 @@ row "30 uncertain inputs, GERG-2008" \
 set -- $("$measure" 3 "$work/trials" "$program")
 row "100000 trials of a wobbe, 21 parts" \
   "$(awk -v t="$1" -v s="$first" 'BEGIN { printf "%.0f", t - s }') ms" "about 1000 ms"
+
+# network NAME AIM ARGUMENT...: what solving one takes
+network() {
+  name=$1
+  aim=$2
+  shift 2
+  # shellcheck disable=SC2046  # five words
+  set -- $("$networks" "$@")
+  row "a network of $1 units$name" "$3 ms, $4 kB" "$aim"
+}
+
+network "" "below 5 ms" 3
+network "" "below 50 ms" 33
+network "" "below 500 ms" 333
+network "" "below 5000 ms" 3333
+network ", short by 3" "" 333 3
+network " that clashes" "" 333 0 3 0.01
 "$equations"

@@ -29,6 +29,13 @@ suites += %D%/t_gross
   %D%/t_gross.c
 %C%_t_gross_LDADD = $(with_balance)
 
+suites += %D%/t_large
+%C%_t_large_SOURCES = \
+  %D%/chain.c \
+  %D%/chain.h \
+  %D%/t_large.c
+%C%_t_large_LDADD = $(with_balance)
+
 suites += %D%/t_network
 %C%_t_network_SOURCES = %D%/t_network.c
 %C%_t_network_LDADD = $(with_balance)
