@@ -2,8 +2,8 @@
    fed by the one before and by a stream of its own.
 
    Streams: 0 is the first feed; ring m has 1 + 6 m: what enters the separator, its top (to the next
-   ring), its rest, what of that is sent back, the purge, the ring's own feed.  Every recovery, every
-   share and every feed is known, so that the plant is determined.                               */
+   ring), its rest, what of that is sent back, the purge, the ring's own feed.  Every recovery,
+   share and feed is known, so that the plant is determined.                                     */
 #ifndef CHAIN_H
 #define CHAIN_H
 
