@@ -61,7 +61,11 @@ unknown (struct session *session, const struct statement *s, struct fault *fault
     return fault_set_at (fault, MESSAGE_UNIT_OPEN, s->name_at, open.fact[0], open.fact[1]);
   }
   evaluation_init (&ev, session, NULL, fault);
-  return name_unknown (&ev, &name);
+  (void) name_unknown (&ev, &name);
+  if (strchr (s->name, '.') && fault->kind == MESSAGE_NAME_UNKNOWN) {
+    fault_hint (fault, "of a file: show samples of \"%s\"", s->name);
+  }
+  return false;
 }
 
 bool
