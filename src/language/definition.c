@@ -13,11 +13,12 @@
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
+#include "support/map.h"
 #include "units/workings.h"
 
 /* ---- Life ---- */
 
-struct name_list { struct arena *arena; const char **at; size_t count, room; };
+struct name_list { struct arena *arena; struct map *met; const char **at; size_t count, room; };
 
 static void
 collect_name (const struct node *node, void *with)
@@ -26,10 +27,11 @@ collect_name (const struct node *node, void *with)
   if (node->kind != NODE_NAME && node->kind != NODE_PART && node->kind != NODE_SHARE) {
     return;
   }
-  for (size_t i = 0; i < list->count; i++)
-    if (strcmp (list->at[i], node->text) == 0) {
-      return;
-    }
+  size_t n = strlen (node->text);
+  if (map_find (list->met, node->text, n)) {
+    return;
+  }
+  map_put (list->met, node->text, n, list);
   if (list->count == list->room) {
     size_t room = list->room ? 2 * list->room : 8;
     const char **more = ARENA_ARRAY (list->arena, room, const char *);
@@ -77,8 +79,9 @@ definition_make (struct session *session, const char *source, enum name_kind kin
     arena_destroy (arena);
     return NULL;
   }
-  struct name_list needs = { arena, NULL, 0, 0 };
+  struct name_list needs = { arena, map_create (), NULL, 0, 0 };
   tree_visit (statement, collect_name, &needs);
+  map_destroy (needs.met);
   d->statement = statement;
   d->name = statement->name;
   d->needs = needs.at;

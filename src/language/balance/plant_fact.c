@@ -551,11 +551,14 @@ plant_read_given (struct reader_state *r, size_t stream)
   typed = typed && typed->kind == NODE_OF && typed->a->kind == NODE_QUANTITY ? typed->a : NULL;
   total_fact (r, stream, &value->stream, value->unit, typed);
   composition_fact (r, stream, value->stream.gas, statement ? statement->value : NULL);
+  const char *source = own->given->source, *words = strchr (source, ' ');
+  if (own->given->maker) {
+    source = words = arena_format (r->ev->arena, "%s, %s", own->name, source);
+  }
   for (size_t i = first; i < r->raw_count; i++) {
     r->raw[i].about.line = 0;
-    r->raw[i].about.text = own->given->source;
-    const char *words = strchr (own->given->source, ' ');
-    r->raw[i].about.words = words ? words + strspn (words, " ") : own->given->source;
+    r->raw[i].about.text = source;
+    r->raw[i].about.words = words ? words + strspn (words, " ") : source;
   }
   return true;
 }
