@@ -1,6 +1,7 @@
 noinst_LIBRARIES += %D%/liblanguage.a
 
 %C%_liblanguage_a_SOURCES = \
+  %D%/balance/card_equations.c \
   %D%/balance/made.c \
   %D%/balance/plant.c \
   %D%/balance/plant.h \

@@ -176,12 +176,39 @@ def blocks(tap):
              "a block whose line failed is not kept")
 
 
+def cards(tap):
+    """What a balance is made of."""
+    words = block("react kiln: fuel + blast = exit with CH4 + 2 O2 = CO2 + 2 H2O",
+                  "known fuel = 10 kmol/h of CH4", "known blast = 30 kmol/h of O2",
+                  "known conversion of CH4 in kiln = 97 %",
+                  solve="show case equations\nshow case matrix")
+    rows = [dict((row["name"], row["values"][0]) for row in thing["card"]["rows"])
+            for thing in session.answers(words)]
+    want = [("kiln, O2", "blast - 2 x extent of reaction 1 = exit"),
+            ("kiln, CO2", "0 + 1 x extent of reaction 1 = exit")]
+    tap.tell(["%s: %s" % (name, rows[0].get(name)) for name, text in want
+              if rows[0].get(name) != text], "equations of a balance in words")
+    line = "+1 O2 of blast  -1 O2 of exit  -2 extent of reaction 1 of kiln  = 0"
+    tap.tell([] if rows[1].get("kiln, O2") == line else [repr(rows[1])],
+             "equations of a balance as coefficients")
+    # Two meters in series: each checks the other; u / sqrt(1 - h) = sqrt(u1^2 + u2^2), and
+    # (1.9600 + 0.8416) times u1^2 over that of adjustments, with m = 2: z 2.2365 (Sidak).
+    objects = session.answers(block("mix pipe: a = b", "known a = 100 +/- 3 kmol/h",
+                                    "known b = 102 +/- 4 kmol/h",
+                                    solve="show case detectability"))
+    got = [row["values"][1] for row in objects[-1]["card"]["rows"]]
+    want = (2.2365 + 0.8416) * 5
+    tap.tell([w for w in (session.off(g, want, 1e-3) for g in got) if w] or
+             ([] if len(got) == 2 else [repr(got)]), "how wrong a figure must be to be found")
+
+
 def main():
     tap = session.Tap()
     forms(tap)
     live(tap)
     kept(tap)
     blocks(tap)
+    cards(tap)
     return tap.finish()
 
 

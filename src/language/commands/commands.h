@@ -36,6 +36,8 @@ bool card_of_unit (struct session *, const struct unit *, struct result *, struc
 void card_of_reference (struct session *, const struct reference *, struct result *);
 void card_of_state (struct session *, const struct definition *, struct result *);
 void card_of_sheet (const struct definition *, struct result *);
+/* Its equations, matrix or detectability; false for another PART.  */
+bool card_of_balance_part (const struct definition *, const char *part, struct result *);
 void card_of_balance (const struct definition *, struct result *);
 void card_of_property (struct session *, enum property, struct result *);
 /* All settings, or only ONE.  */

@@ -35,7 +35,9 @@ show_definition (struct session *session, const struct statement *s, struct defi
     card_of_sheet (d, result);
     return true;
   case NAME_BALANCE:
-    card_of_balance (d, result);
+    if (!s->text || !card_of_balance_part (d, s->text, result)) {
+      card_of_balance (d, result);
+    }
     return true;
   }
   return false;
@@ -79,6 +81,11 @@ command_show (struct session *session, const struct statement *s, struct result 
   const char *candidates = NULL;
   if (s->samples) {
     return command_samples (session, s, result, fault);
+  }
+  if (s->text && (!d || d->kind != NAME_BALANCE)) {
+    return d ? fault_set_at (fault, MESSAGE_KIND_WRONG, s->text_at,
+                             "equations, matrix and detectability are those of a balance", NULL)
+             : unknown (session, s, fault);
   }
   if (d) {
     return show_definition (session, s, d, result, fault);

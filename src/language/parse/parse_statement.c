@@ -135,6 +135,29 @@ parse_samples (struct parser *p, struct statement *statement)
   return parse_only_name (p, statement, false, form);
 }
 
+/* NAME and "equations", "matrix" or "detectability" behind it  */
+static bool
+at_balance_part (const struct parser *p)
+{
+  struct token behind = token_behind (p);
+  return at_name (p) && (token_is (p, &behind, "equations") || token_is (p, &behind, "matrix")
+                         || token_is (p, &behind, "detectability"));
+}
+
+static bool
+parse_balance_part (struct parser *p, struct statement *statement)
+{
+  const struct node *name = parse_name (p, "show NAME equations");
+  if (name == NULL)
+    return false;
+  statement->name = name->text;
+  statement->name_at = name->at;
+  statement->text_at = p->token.at;
+  statement->text = arena_string (p->arena, token_text (p, &p->token));
+  token_take (p);
+  return expect_end (p, "show NAME equations");
+}
+
 /* "show" ( NAME | UNIT | PROPERTY ): all of these that it can be; or "samples"  */
 static bool
 parse_show (struct parser *p, struct statement *statement)
@@ -142,6 +165,8 @@ parse_show (struct parser *p, struct statement *statement)
   const char *form = "show NAME; list shows the names";
   if (at_samples (p))
     return parse_samples (p, statement);
+  if (at_balance_part (p))
+    return parse_balance_part (p, statement);
   struct unit_read read = { NULL, NULL, { 0, 0, 0 } };
   struct scanner behind;
   bool unit = unit_at (p, &p->token, &read, &behind);
