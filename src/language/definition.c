@@ -59,7 +59,7 @@ struct definition *
 definition_make (struct session *session, const char *source, enum name_kind kind,
                  struct fault *fault)
 {
-  struct arena *arena = arena_create ();
+  struct arena *arena = arena_create_small ();
   struct definition *d = ARENA_NEW (arena, struct definition);
   struct statement *statement;
   d->arena = arena;
@@ -86,7 +86,7 @@ definition_make (struct session *session, const char *source, enum name_kind kin
   d->name = statement->name;
   d->needs = needs.at;
   d->need_count = needs.count;
-  d->cache = arena_create ();
+  d->cache = arena_create_small ();
   d->holders = 1;
   return d;
 }

@@ -65,10 +65,11 @@ file_answer (struct kept *kept, struct kept_answer *answer)
 static struct step **
 end_of (struct kept_answer *answer)
 {
-  struct step **end = &answer->steps;
+  struct step **end = answer->end ? answer->end : &answer->steps;
   while (*end) {
     end = &(*end)->next;
   }
+  answer->end = end;
   return end;
 }
 
@@ -383,6 +384,7 @@ kept_settle_one (struct session *s, struct kept_answer *answer)
   }
   gather (&g, answer->steps);
   answer->steps = g.first;
+  answer->end = NULL;
   answer->used = NULL;
   answer->used_count = 0;
   answer->answers = answers_copy (g.arena, answer->answers, answer->count);

@@ -28,6 +28,7 @@ struct kept_answer {
   const struct remark *taken, *notes, *cautions;
   struct value value;
   struct step *steps;                      /* its own; once settled, all in order of dependence */
+  struct step **end;                       /* some way along them towards their end; or null */
   struct definition *const *used;          /* before it is settled */
   size_t used_count;
   unsigned touched;                        /* what it leaned on */

@@ -74,6 +74,9 @@ tree_new_gas (const struct node *node)
 
 /* ---- Who leans on whom ---- */
 
+/* What `mentioned` holds of a name: the name of the one definition that mentioned it, or this.  */
+#define SEVERAL(session) ((void *) (session)->mentioned)
+
 /* A balance does not lean on the streams it makes itself.  */
 static bool
 is_own (const struct definition *d, const struct definition *need)
@@ -113,13 +116,26 @@ definition_leans (struct session *s, struct definition *d, const char *name)
   return leans (s, d, name, ++s->look);
 }
 
+/* The usual cases, without a look at every definition: a new name nobody could know, and a stream
+   that only the balance which makes it ever mentioned.                                          */
+static bool
+nobody_leans (const struct session *s, const char *name)
+{
+  const void *by = map_find (s->mentioned, name, strlen (name));
+  if (!by || by == SEVERAL (s)) {
+    return !by;
+  }
+  const struct definition *only = name_find (s, by, strlen (by));
+  return only && is_own (only, name_find (s, name, strlen (name)));
+}
+
 size_t
 names_leaning (struct session *s, struct arena *arena, const char *name,
                struct definition ***leaning)
 {
   size_t n = 0;
-  if (!map_find (s->mentioned, name, strlen (name))) {
-    *leaning = NULL;                    /* the usual case: a new name nobody could know */
+  if (nobody_leans (s, name)) {
+    *leaning = NULL;
     return 0;
   }
   *leaning = ARENA_ARRAY (arena, s->count, struct definition *);
@@ -134,11 +150,15 @@ names_leaning (struct session *s, struct arena *arena, const char *name,
 void
 names_remember_mentions (struct session *s, struct definition *d)
 {
+  char *by = NULL;
   for (size_t i = 0; i < d->need_count; i++) {
     size_t n = strlen (d->needs[i]);
-    if (!map_find (s->mentioned, d->needs[i], n)) {
-      map_put (s->mentioned, d->needs[i], n, s);
+    const char *before = map_find (s->mentioned, d->needs[i], n);
+    if (before == SEVERAL (s) || (before && strcmp (before, d->name) == 0)) {
+      continue;
     }
+    by = by ? by : arena_string (s->arena, d->name);
+    map_put (s->mentioned, d->needs[i], n, before ? SEVERAL (s) : by);
   }
 }
 

@@ -51,24 +51,6 @@ name_place (struct session *s, const char *name, struct definition *d, size_t pl
 }
 
 void
-name_add_made (struct session *s, struct definition *d)
-{
-  size_t balances = 0;
-  for (size_t i = 0; i < s->count; i++) {
-    balances += s->order[i]->kind == NAME_BALANCE ? 1 : 0;
-  }
-  if (s->count == s->room) {
-    s->room = s->room ? 2 * s->room : 32;
-    s->order = memory_resize (s->order, s->room, sizeof *s->order);
-  }
-  map_put (s->names, d->name, strlen (d->name), d);
-  s->order[s->count++] = d;
-  if (balances > 1) {
-    names_changed (s, d->name);
-  }
-}
-
-void
 names_clear (struct session *s)
 {
   for (size_t i = 0; i < s->count; i++) {

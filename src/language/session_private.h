@@ -83,7 +83,8 @@ struct session {
   struct arena *arena;                     /* what lasts: tables' extras, texts of settings */
   struct settings settings;
   struct map *names;                       /* of struct definition */
-  struct map *mentioned;                   /* every name a definition ever mentioned */
+  struct map *mentioned;                   /* every name a definition ever mentioned, and by
+                                              which (mentions.c) */
   unsigned long look;                      /* counts searches through the definitions */
   struct definition **order;               /* as first defined */
   size_t count, room;
@@ -182,9 +183,6 @@ bool name_forget (struct session *, const struct node *names, struct fault *) MU
 bool name_unknown (struct evaluation *, const struct node *name);
 /* Puts a definition where it belongs, or (null) takes the name away; returns where it stood.    */
 size_t name_place (struct session *, const char *name, struct definition *, size_t place);
-/* Appends a stream that a balance made under a new name.  Nobody can lean on it yet but another
-   balance, which took the name for a stream of its own.                                         */
-void name_add_made (struct session *, struct definition *);
 void names_clear (struct session *);
 /* The names of definitions whose figures lean on what BITS stand for: "raw, feed"; null: none.  */
 const char *names_touching (const struct session *, struct arena *, unsigned bits);

@@ -29,6 +29,7 @@
 enum {
   ALIGNMENT = alignof (max_align_t),
   FIRST_CHUNK = 16 * 1024,               /* bytes; most lines need no more */
+  FIRST_SMALL = 512,
   LARGEST_STEP = 1024 * 1024             /* chunks double up to here */
 };
 
@@ -82,15 +83,27 @@ enter_chunk (struct arena *arena, struct chunk *chunk)
   arena->end = chunk->bytes + chunk->room;
 }
 
-struct arena *
-arena_create (void)
+static struct arena *
+create_with (size_t room)
 {
   struct arena *arena = memory_get (1, sizeof (struct arena));
 
-  arena->step = 2 * FIRST_CHUNK;
-  arena->first = chunk_create (FIRST_CHUNK);
+  arena->step = 2 * room;
+  arena->first = chunk_create (room);
   enter_chunk (arena, arena->first);
   return arena;
+}
+
+struct arena *
+arena_create (void)
+{
+  return create_with (FIRST_CHUNK);
+}
+
+struct arena *
+arena_create_small (void)
+{
+  return create_with (FIRST_SMALL);
 }
 
 void

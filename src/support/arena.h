@@ -14,6 +14,8 @@
 struct arena;
 
 struct arena *arena_create (void) MUST_CHECK;
+/* For what there are thousands of, with little in each.  */
+struct arena *arena_create_small (void) MUST_CHECK;
 void arena_destroy (struct arena *);                    /* null is allowed */
 
 /* Forgets everything handed out but keeps the memory for the next line.  */

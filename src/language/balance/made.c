@@ -13,13 +13,13 @@
 struct definition *
 definition_made (const char *name, const char *balance, enum name_kind kind)
 {
-  struct arena *arena = arena_create ();
+  struct arena *arena = arena_create_small ();
   struct definition *d = ARENA_NEW (arena, struct definition);
   struct statement *statement = ARENA_NEW (arena, struct statement);
   struct node *value = ARENA_NEW (arena, struct node);
   const char **needs = ARENA_ARRAY (arena, 1, const char *);
   d->arena = arena;
-  d->cache = arena_create ();
+  d->cache = arena_create_small ();
   d->holders = 1;
   d->kind = kind;
   d->name = arena_string (arena, name);

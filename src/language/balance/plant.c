@@ -73,14 +73,17 @@ read_once (struct evaluation *ev, const struct statement *block, const struct pl
   plant->name = block->name;
   plant->block = block;
   plant->stream_by_name = map_create ();
+  plant->boundary_by_name = map_create ();
   bool done = plant_read_names (&r, block);
   size_t told = r.species_count;
   for (size_t s = 0; done && last && s < plant->stream_count; s++) {
     plant->stream[s].gas = last->stream[s].gas;
   }
   done = done && read_facts (&r, block, base) && plant_network (&r, told, base);
+  plant_sort_streams (ev->arena, plant);
   map_destroy (plant->stream_by_name);
-  plant->stream_by_name = NULL;
+  map_destroy (plant->boundary_by_name);
+  plant->stream_by_name = plant->boundary_by_name = NULL;
   *real = r.real_volumes;
   return done ? plant : NULL;
 }

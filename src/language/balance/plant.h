@@ -50,7 +50,8 @@ struct plant {
   size_t component_count, stream_count, boundary_count, fact_count;
   const struct species **component;        /* none in a balance of whole flows */
   struct plant_stream *stream;
-  struct map *stream_by_name;              /* to index + 1; only while it is read */
+  struct map *stream_by_name, *boundary_by_name;         /* to index + 1; only while it is read */
+  const size_t *streams_sorted;            /* by name, once it is read */
   struct plant_boundary *boundary;
   struct plant_fact *fact;
   struct network network;

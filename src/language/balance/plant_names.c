@@ -10,23 +10,75 @@
 #include "support/arena.h"
 #include "support/map.h"
 
+/* What a map from names to indices plus one holds.  */
+static size_t
+index_in (const struct map *map, const char *name, size_t absent)
+{
+  const size_t at = (size_t) (uintptr_t) map_find (map, name, strlen (name));
+  return at > 0 ? at - 1 : absent;
+}
+
 size_t
 plant_find (const struct plant *plant, const char *name)
 {
   if (plant->stream_by_name) {
-    size_t at = (size_t) (uintptr_t) map_find (plant->stream_by_name, name, strlen (name));
-    return at > 0 ? at - 1 : NO_STREAM;
+    return index_in (plant->stream_by_name, name, NO_STREAM);
   }
-  for (size_t s = 0; s < plant->stream_count; s++)
-    if (strcmp (plant->stream[s].name, name) == 0) {
+  size_t least = 0, end = plant->stream_count;
+  while (least < end) {
+    const size_t middle = least + (end - least) / 2, s = plant->streams_sorted[middle];
+    const int order = strcmp (plant->stream[s].name, name);
+    if (order == 0) {
       return s;
     }
+    least = order < 0 ? middle + 1 : least;
+    end = order < 0 ? end : middle;
+  }
   return NO_STREAM;
+}
+
+/* Merges the halves of FROM, each sorted by the names of STREAMS, into TO.  */
+static void
+merge_halves (const struct plant_stream streams[], size_t count, const size_t from[], size_t to[])
+{
+  const size_t half = count / 2;
+  size_t a = 0, b = half;
+  for (size_t i = 0; i < count; i++) {
+    const bool left = b == count
+                      || (a < half && strcmp (streams[from[a]].name, streams[from[b]].name) < 0);
+    to[i] = left ? from[a++] : from[b++];
+  }
+}
+
+static void
+sort_part (const struct plant_stream streams[], size_t count, size_t at[], size_t spare[])
+{
+  if (count > 1) {
+    sort_part (streams, count / 2, at, spare);
+    sort_part (streams, count - count / 2, at + count / 2, spare);
+    merge_halves (streams, count, at, spare);
+    memcpy (at, spare, count * sizeof *at);
+  }
+}
+
+void
+plant_sort_streams (struct arena *arena, struct plant *plant)
+{
+  size_t *at = ARENA_ARRAY (arena, plant->stream_count, size_t);
+  size_t *spare = ARENA_ARRAY (arena, plant->stream_count, size_t);
+  for (size_t s = 0; s < plant->stream_count; s++) {
+    at[s] = s;
+  }
+  sort_part (plant->stream, plant->stream_count, at, spare);
+  plant->streams_sorted = at;
 }
 
 size_t
 plant_boundary_find (const struct plant *plant, const char *name)
 {
+  if (plant->boundary_by_name) {
+    return index_in (plant->boundary_by_name, name, NO_BOUNDARY);
+  }
   for (size_t b = 0; b < plant->boundary_count; b++)
     if (strcmp (plant->boundary[b].name, name) == 0) {
       return b;
@@ -156,6 +208,7 @@ add_boundary (struct reader_state *r, const struct statement *line)
                                   sizeof *plant->boundary);
   plant->boundary[b] = (struct plant_boundary) { line->name, line, r->number };
   plant->boundary_count++;
+  map_put (plant->boundary_by_name, line->name, strlen (line->name), (void *) (uintptr_t) (b + 1));
   return add_side (r, b, line->inlets, true) && add_side (r, b, line->outlets, false);
 }
 

@@ -83,6 +83,8 @@ void meet_species (struct reader_state *, const struct species *);
 void meet_gas (struct reader_state *, const struct composition *);
 /* The boundary called NAME; NO_BOUNDARY.  */
 size_t plant_boundary_find (const struct plant *, const char *name);
+/* So that plant_find is quick once the plant is read.  */
+void plant_sort_streams (struct arena *, struct plant *);
 
 /* plant_reading.c  */
 bool plant_reading (struct reader_state *, const struct node *, struct reading *) MUST_CHECK;

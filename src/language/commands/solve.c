@@ -63,9 +63,9 @@ make_stream (struct session *session, struct evaluation *ev, const struct plant 
   if (fixed && !before) {
     struct definition *d = definition_made (name, plant->name,
                                             plant->whole ? NAME_QUANTITY : NAME_STREAM);
-    name_add_made (session, d);
+    size_t place = name_place (session, d->name, d, session->count);
     names_remember_mentions (session, d);
-    undo_note (session, d->name, NULL, d, session->count - 1, NULL);
+    undo_note (session, d->name, NULL, d, place, NULL);
   } else if (!fixed && before && !is_leant_on (session, ev->arena, name)) {
     size_t place = name_place (session, name, NULL, 0);
     undo_note (session, before->name, before, NULL, place, NULL);
