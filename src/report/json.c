@@ -19,6 +19,7 @@
      "standing"}],"all":numbers,"without_outliers"?:numbers,"grubbs"?:{"G","of","straggler_above",
      "outlier_above"}}; numbers are {"count","mean","standard_deviation","median","least",
      "greatest","least_of","greatest_of"}; a standing is usual, straggler or outlier.
+   A balance: see verdict.c.
    Help: {"title","entries":[{"say","get","try"}]}.
    A fault: {"statement","error":{"kind","message","file"?,"line","column","hint"}}; "hint" is a
    corrected line where there is one, else what was expected, else "".  A place not known is 0.

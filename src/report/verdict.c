@@ -124,7 +124,19 @@ report_verdict (struct text *out, const struct report_style *style,
   facts_add (out, style, v);
 }
 
-/* ---- JSON ---- */
+/* ---- JSON ----
+
+   {"name","variables","balances","relations","knowns","independent","degrees_of_freedom","surplus",
+    "status":"determined|underdetermined|redundant|contradictory|reconciled",
+    "streams":{NAME:{"molar_flow","mass_flow","uncertainty","fractions":{...},
+      "fraction_uncertainties":{...}}},"ranges":{NAME:{"least","greatest"}},"determined":[text],
+    "undetermined":[text],"suggestions":[[text]],"relations_left":[text],"negative":[NAME],
+    "gap":{"around","component","value","unit"}|null,"conflict":[line],"redundant":[line],
+    "suspects":[{"line","statement","needed","unit"}],"adjustments":[{"statement","component",
+    "stated","reconciled","uncertainty","unit","z"}],"global_test":{"chi2","degrees_of_freedom",
+    "critical","passed"}|null,"phrase","head","counts","says":[[label, text]]}
+   Flows are in mol/s and kg/s, "uncertainty" that of the molar flow (of the mass flow where all
+   flows are by mass); what is open, and the z of a figure that nothing checks, is null.         */
 
 static void
 number_add (struct text *out, const char *key, double value)

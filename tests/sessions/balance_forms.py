@@ -202,6 +202,14 @@ def cards(tap):
              ([] if len(got) == 2 else [repr(got)]), "how wrong a figure must be to be found")
 
 
+def cautions(tap):
+    """What is mixed by a balance may be a hazard: methane in air, 10 mol%, burns from 5 on."""
+    objects = session.answers(block("mix unit: fuel + blast = charge", "known fuel = 10 kmol/h of CH4",
+                                    "known blast = 90 kmol/h of air"))
+    tap.tell([] if any("charge" in one and "flammable" in one for one in objects[0]["cautions"])
+             else objects[0]["cautions"] or ["no caution"], "a balance warns of what it mixes")
+
+
 def main():
     tap = session.Tap()
     forms(tap)
@@ -209,6 +217,7 @@ def main():
     kept(tap)
     blocks(tap)
     cards(tap)
+    cautions(tap)
     return tap.finish()
 
 

@@ -44,6 +44,15 @@ is_leant_on (struct session *session, struct arena *arena, const char *name)
   return names_leaning (session, arena, name, &leaning) > 0;
 }
 
+/* A mixture that nobody stated may be a hazard: what comes out of a mix or a reaction.  */
+static bool
+is_new_gas (const struct plant *plant, size_t s)
+{
+  size_t from = plant->stream[s].from;
+  return from != NO_BOUNDARY && (plant->boundary[from].line->kind == STATEMENT_MIX
+                                 || plant->boundary[from].line->kind == STATEMENT_REACT);
+}
+
 /* The stream as a definition of its own, unless it is one already; taken away if it is no longer
    fixed and nobody leans on it.                                                                 */
 static void
@@ -60,6 +69,9 @@ make_stream (struct session *session, struct evaluation *ev, const struct plant 
   fault_init (&unheard, ev->arena);
   evaluation_again (&quiet, ev, &unheard);
   bool fixed = plant_stream_value (&quiet, plant, name, &value);
+  if (fixed && value.kind == VALUE_STREAM && is_new_gas (plant, s)) {
+    caution_gas (session, ev->result, value.stream.gas, name);
+  }
   if (fixed && !before) {
     struct definition *d = definition_made (name, plant->name,
                                             plant->whole ? NAME_QUANTITY : NAME_STREAM);
