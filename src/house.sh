@@ -43,6 +43,9 @@ need_for_references() {
   need 'python3 -c "import pint"' python3-pint
   need 'python3 -c "import periodictable"' python3-periodictable
   need 'python3 -c "import iapws"' python3-iapws
+  need 'python3 -c "import uncertainties"' python3-uncertainties
+  need 'python3 -c "import html5lib"' python3-html5lib
+  need 'command -v tidy' tidy
 }
 
 # Runs a command as root, with no input and its output kept out of ours.
