@@ -194,14 +194,15 @@ absence_spread (struct arena *arena, const struct network *network, const bool t
   struct absence absence = { ARENA_ARRAY (arena, columns, bool),
                              ARENA_ARRAY (arena, columns, size_t) };
   double *have = ARENA_ARRAY (arena, columns, double);
-  bool news = true;
+  bool news = true, forwards = true;
   undeclared (network, &absence);
-  while (news) {
+  for (; news; forwards = !forwards) {
     news = false;
     for (size_t f = 0; f < network->facts; f++) {
       news = (take[f] && fact_absences (network, f, &absence, have)) || news;
     }
-    for (size_t b = 0; b < network->boundaries; b++) {
+    for (size_t i = 0; i < network->boundaries; i++) {
+      size_t b = forwards ? i : network->boundaries - 1 - i;
       for (size_t c = 0; c < network->components; c++) {
         news = boundary_absences (network, &network->boundary[b], c, &absence) || news;
       }
