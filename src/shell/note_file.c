@@ -70,7 +70,7 @@ note_file_write (struct result *result, const struct note_inputs *inputs, struct
 {
   for (const struct note *note = result->note; note != NULL; note = note->next) {
     if (is_input (note, inputs))
-      return fault_set (fault, MESSAGE_NOTE_INPUT, note->file, NULL);
+      return fault_set (fault, MESSAGE_FILE_INPUT, note->file, NULL);
     if (!write_one (note, fault))
       return false;
     result_remark (result, MESSAGE_NOTE_WRITTEN, note->file, NULL);

@@ -9,7 +9,7 @@
 struct fault; struct note; struct result; struct script;
 
 /* Writes the notes of RESULT, each beside its file and then in its place, and says so in RESULT.
-   INPUTS are COUNT files the run reads.  False with FAULT (kinds note-input, file) if one would
+   INPUTS are COUNT files the run reads.  False with FAULT (kinds file-input, file) if one would
    overwrite an input or cannot be written.                                                      */
 struct note_inputs { char *const *files; size_t count; const char *running; };
 bool note_file_write (struct result *, const struct note_inputs *, struct fault *) MUST_CHECK;

@@ -239,7 +239,7 @@ command_note (struct session *s, const struct statement *statement, struct resul
                          NULL);
   }
   if (!ends_in (statement->text, ".md") && !ends_in (statement->text, ".html")) {
-    return fault_set_at (fault, MESSAGE_NOTE_FORM, statement->text_at, statement->text, NULL);
+    return fault_set_at (fault, MESSAGE_FILE_FORM, statement->text_at, statement->text, NULL);
   }
   struct note *note = ARENA_NEW (arena, struct note);
   note->file = statement->text;
