@@ -65,6 +65,13 @@ run_lines (struct session *session, const struct statement *s, const struct text
     done = run_line (session, &copy, first, result, &inside);
   }
   text_clear (&line);
+  if (done && session_block (session) != BLOCK_NONE) {
+    done = fault_set_at (&inside, MESSAGE_UNFINISHED, (struct place) { reader.line, 1, 1 },
+                         "a block is closed with 'end'", NULL);
+  }
+  if (!done) {
+    session_leave_block (session);        /* nothing of the file is kept, nor is it left open */
+  }
   return done || fault_inside (s, &inside, fault);
 }
 
