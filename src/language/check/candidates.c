@@ -45,7 +45,7 @@ filled (struct arena *arena, const char *pattern, const char *one, const char *t
 static const char *
 volume_text (const struct check *check, const struct candidate *c)
 {
-  struct arena *arena = check->arena;
+  struct arena *arena = check->work;
   if (c->family == FAMILY_NONE) {
     return c->sides == 1u << SIDE_STATED ? check->stated : "the volume";
   }
@@ -62,7 +62,7 @@ add (struct gathering *g)
 {
   if (g->count == g->room) {
     size_t room = g->room ? 2 * g->room : 64;
-    struct candidate *more = ARENA_ARRAY (g->check->arena, room, struct candidate);
+    struct candidate *more = ARENA_ARRAY (g->check->work, room, struct candidate);
     if (g->count) {
       memcpy (more, g->at, g->count * sizeof *more);
     }
@@ -145,13 +145,13 @@ add_reference (struct gathering *g, const struct reading_rule *rule, unsigned si
                            .figure = UNSTATED };
   int side = sides == 1u << SIDE_STATED ? SIDE_STATED : SIDE_COMPUTED;
   struct conditions base = check->base[side].settings.family[family].at;
-  if (!dry_pressure (check->arena, r, &new.at)) {
+  if (!dry_pressure (check->work, r, &new.at)) {
     return;
   }
   struct candidate *old = same_conditions (g, &new);
   if (old) {
     if (old->rule == rule || !reading_names (old->rule, r->name)) {
-      add_name (check->arena, old, r->name);
+      add_name (check->work, old, r->name);
     }
     return;
   }
@@ -160,11 +160,11 @@ add_reference (struct gathering *g, const struct reading_rule *rule, unsigned si
     return;
   }
   bool moist = r->at.humidity > 0;
-  new.text = arena_format (check->arena, "%s, %s%s%s", r->temperature, r->pressure,
+  new.text = arena_format (check->work, "%s, %s%s%s", r->temperature, r->pressure,
                            moist ? ", " : "", moist ? r->moisture : "");
   new.fills = open;
   new.common = is_common (rule, r->name);
-  add_name (check->arena, &new, r->name);
+  add_name (check->work, &new, r->name);
   *add (g) = new;
 }
 
@@ -275,7 +275,7 @@ applies (const struct check *check, const struct reading_rule *rule, unsigned si
 static void
 add_rule (struct gathering *g, const struct reading_rule *rule, unsigned sides)
 {
-  struct arena *arena = g->check->arena;
+  struct arena *arena = g->check->work;
   if (rule->change == READING_REFERENCE) {
     add_references (g, rule, sides);
     return;
@@ -308,7 +308,7 @@ add_own_state (struct gathering *g)
     c->sides = 1u << SIDE_STATED;
     c->own = c->fills = true;
     c->cost = 1;
-    c->said = arena_format (g->check->arena, "%s at the state of what it is of",
+    c->said = arena_format (g->check->work, "%s at the state of what it is of",
                             g->check->stated);
   }
 }
@@ -344,9 +344,9 @@ candidates_of (struct check *check, const struct readings *readings, size_t *cou
   for (size_t i = 0; i < g.count; i++) {
     struct candidate *c = &g.at[i];
     if (c->rule && c->rule->change == READING_REFERENCE) {
-      const char *conditions = arena_format (check->arena, "%s (%s)", c->text,
-                                             names_text (check->arena, c));
-      c->said = filled (check->arena, c->rule->said, "", volume_text (check, c), conditions);
+      const char *conditions = arena_format (check->work, "%s (%s)", c->text,
+                                             names_text (check->work, c));
+      c->said = filled (check->work, c->rule->said, "", volume_text (check, c), conditions);
     }
   }
   *count = g.count;

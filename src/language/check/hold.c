@@ -248,6 +248,7 @@ check_hold (struct check *check, struct session *session, const struct statement
   double limit, u_computed = 0;
   struct result aside;
   *check = (struct check) { .session = session, .arena = fault->arena };
+  check->work = arena_create ();
   check->scratch = arena_create ();
   check->stated = node_text (check->arena, s, claim);
   for (int i = 0; i < SIDES; i++) {
@@ -281,5 +282,6 @@ check_hold (struct check *check, struct session *session, const struct statement
 void
 check_release (struct check *check)
 {
+  arena_destroy (check->work);
   arena_destroy (check->scratch);
 }

@@ -46,7 +46,7 @@ join (struct check *check, struct candidate *old, const struct candidate *new)
   if (repeats || strlen (old->said) > 150) {
     return;
   }
-  old->said = arena_format (check->arena, "%s; that is, %s", old->said, new->said);
+  old->said = arena_format (check->work, "%s; that is, %s", old->said, new->said);
 }
 
 size_t
@@ -58,7 +58,7 @@ search_singles (struct check *check, struct candidate *candidates, size_t count)
     struct side sides[SIDES] = { check->base[0], check->base[1] };
     if (c.sides & 1u << SIDE_COMPUTED) {
       candidate_apply (check, &c, sides);
-      c.has_value = check_value_at (check, &sides[SIDE_COMPUTED], check->arena, &c.value);
+      c.has_value = check_value_at (check, &sides[SIDE_COMPUTED], check->work, &c.value);
       if (!c.has_value) {
         continue;
       }
@@ -110,7 +110,7 @@ static struct check_reading *
 reading_of (struct check *check, const char *said, double figure, const struct unit *unit)
 {
   struct check_reading *r = ARENA_NEW (check->arena, struct check_reading);
-  r->reading = said;
+  r->reading = arena_string (check->arena, said);
   r->value = figure;
   r->unit = unit ? unit->spelling : "";
   r->deviation = check_deviation (check, figure, unit);
@@ -171,7 +171,7 @@ search_pairs (struct check *check, const struct candidate *c, size_t n, struct c
       if (is_tried (check, &c[i], &c[k]) && check_try (check, &c[i], &c[k], &figure, &unit)
           && check_fits (check, figure) && !has_twin (v, figure, cost)) {
         const struct candidate *first = c[k].fills ? &c[k] : &c[i];
-        const char *said = arena_format (check->arena, "%s; %s", first->said,
+        const char *said = arena_format (check->work, "%s; %s", first->said,
                                          (first == &c[i] ? &c[k] : &c[i])->said);
         add_reading (v, reading_of (check, said, figure, unit), cost);
       }

@@ -331,9 +331,10 @@ copy_run (const struct sheet *sheet, struct trial_run *to, const struct trial_ru
 static void
 add_set (struct best *best, const char *said)
 {
-  struct check_reading *r = ARENA_NEW (best->sheet->check.arena, struct check_reading);
-  *r = (struct check_reading) { .reading = said, .value = (double) best->try.agreeing,
-                                .unit = "figures", .deviation = UNSTATED, .cost = best->cost,
+  struct arena *arena = best->sheet->check.arena;
+  struct check_reading *r = ARENA_NEW (arena, struct check_reading);
+  *r = (struct check_reading) { .reading = arena_string (arena, said),
+                                .value = (double) best->try.agreeing, .unit = "figures", .deviation = UNSTATED, .cost = best->cost,
                                 .next = best->verdict->readings };
   best->verdict->readings = r;
   best->verdict->reading_count++;
@@ -503,7 +504,8 @@ sheet_check (struct session *session, const struct definition *d, const struct r
              struct check_verdict *v, struct fault *fault)
 {
   struct sheet sheet = { .check = { .session = session, .arena = fault->arena,
-                                    .scratch = arena_create (), .stated = d->name } };
+                                    .work = arena_create (), .scratch = arena_create (),
+                                    .stated = d->name } };
   for (int i = 0; i < SIDES; i++) {
     sheet.check.base[i].settings = *session_settings (session);
     fill_open (&sheet.check.base[i].settings);

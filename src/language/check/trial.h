@@ -39,7 +39,8 @@ struct candidate {
 
 struct check {
   struct session *session;
-  struct arena *arena, *scratch;
+  struct arena *arena;                      /* of the line: what the verdict says */
+  struct arena *work, *scratch;             /* of the search; of one look */
   struct statement question;                /* the computed side, told in the claim's unit */
   struct target target;
   const struct node *claim;                 /* its NODE_QUANTITY */
@@ -58,7 +59,7 @@ struct check {
 void candidate_apply (const struct check *, const struct candidate *, struct side sides[SIDES]);
 /* Can the two hold at once?  */
 bool candidates_agree (const struct candidate *, const struct candidate *) MUST_CHECK;
-/* All candidates a check has, not yet worked out; in its arena.  */
+/* All candidates a check has, not yet worked out; in its `work`.  */
 struct candidate *candidates_of (struct check *, const struct readings *, size_t *count);
 
 /* The figure under the settings of both sides; VALUE, if not null, is the computed side already
