@@ -334,7 +334,8 @@ add_set (struct best *best, const char *said)
   struct arena *arena = best->sheet->check.arena;
   struct check_reading *r = ARENA_NEW (arena, struct check_reading);
   *r = (struct check_reading) { .reading = arena_string (arena, said),
-                                .value = (double) best->try.agreeing, .unit = "figures", .deviation = UNSTATED, .cost = best->cost,
+                                .value = (double) best->try.agreeing, .unit = "figures",
+                                .deviation = UNSTATED, .cost = best->cost,
                                 .next = best->verdict->readings };
   best->verdict->readings = r;
   best->verdict->reading_count++;
