@@ -20,6 +20,9 @@ static const char *const statement_words[] = {
 #undef STATEMENT
   NULL
 };
+static const char *const balance_words[] = { "mix", "separate", "split", "react", "components",
+                                             "known", "absent", "per", "around", "end", NULL };
+static const char *const sheet_words[] = { "end", NULL };
 static const char *const further_words[] = {
 #define WORD(text) text,
 #include "language/words.def"
@@ -305,6 +308,11 @@ offer_at_place (struct search *search)
 {
   switch (search->phrase.place) {
     case PLACE_OPENING:
+      if (session_block (search->session) != BLOCK_NONE) {
+        offer_all (search, session_block (search->session) == BLOCK_BALANCE ? balance_words
+                                                                           : sheet_words);
+        break;
+      }
       offer_all (search, statement_words);
       offer_all (search, properties);
       offer_own_names (search);

@@ -4,7 +4,9 @@
 
 #include <string.h>
 
+#include "language/parse.h"
 #include "language/session.h"
+#include "result/result.h"
 #include "shell/completion.h"
 #include "shell/history.h"
 #include "shell/options.h"
@@ -178,6 +180,33 @@ offers (void)
   arena_destroy (arena);
 }
 
+/* Inside a balance its own words open a line, outside they do not.  */
+static void
+offers_in_block (void)
+{
+  struct arena *arena = arena_create ();
+  struct session *session = new_session (arena);
+  struct fault fault;
+  struct result result;
+  struct statement *statement;
+
+  NEED (session != NULL);
+  CHECK (!is_offered (session, arena, "sepa", "separate"));
+  fault_init (&fault, arena);
+  result_init (&result, arena, "balance plant");
+  struct parser *parser = parser_create (arena, session_vocabulary (session), "balance plant", 13,
+                                         1, BLOCK_NONE);
+  CHECK (parser_next (parser, &statement, &fault)
+         && session_run (session, statement, &result, &fault));
+  CHECK (is_offered (session, arena, "sepa", "separate"));
+  CHECK (is_offered (session, arena, "kn", "known"));
+  CHECK (!is_offered (session, arena, "de", "density"));
+  session_leave_block (session);
+  CHECK (is_offered (session, arena, "de", "density"));
+  session_destroy (session);
+  arena_destroy (arena);
+}
+
 static void
 offered_units (void)
 {
@@ -253,6 +282,7 @@ static const struct test_case cases[] = {
   { "which lines the history keeps", kept_lines },
   { "what may stand where", places },
   { "what is offered", offers },
+  { "what is offered inside a balance", offers_in_block },
   { "every offered unit reads", offered_units },
   { "command lines", command_lines },
   { NULL, NULL }
