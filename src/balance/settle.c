@@ -23,14 +23,14 @@ settled (struct arena *arena, const struct network *network, const struct fact *
   size_t components = network->components;
   double whole = 1, part = form_value (&fact->left, v);
   double *x = ARENA_ARRAY (arena, components, double);
-  const double *flow = &v[fact->stream * components], *of = &v[fact->of * components];
   if (fact->kind == FACT_RATIO) {
     whole = form_value (&fact->right, v);
   } else if (fact->kind != FACT_FORM) {
+    size_t over = fact->kind == FACT_SHARE ? fact->of : fact->stream;
     part = whole = 0;
     for (size_t c = 0; c < components; c++) {
-      part += flow[c];
-      whole += fact->kind == FACT_SHARE ? of[c] : flow[c];
+      part += v[fact->stream * components + c];
+      whole += v[over * components + c];
     }
   }
   out.u = (double) NAN;
@@ -39,7 +39,7 @@ settled (struct arena *arena, const struct network *network, const struct fact *
     out.value = part / whole;
     out.rounding = fabs (out.value) * after_moving;
     for (size_t c = 0; c < components && fact->kind == FACT_COMPOSITION; c++) {
-      x[c] = fmax (flow[c] / whole, 0);
+      x[c] = fmax (v[fact->stream * components + c] / whole, 0);
     }
     out.fractions = fact->kind == FACT_COMPOSITION ? x : fact->fractions;
   }

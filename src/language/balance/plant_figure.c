@@ -12,6 +12,10 @@
 #include "support/arena.h"
 #include "units/constants.h"
 
+/* Whole numbers are typed as exact ones are (100 kmol/h, a share of 10 %): their digits say little
+   of what they are good to, and never more than this part of them.                              */
+static const double whole_most = 0.005;
+
 double
 digits_rounding (const struct node *figure)
 {
@@ -30,7 +34,9 @@ digits_rounding (const struct node *figure)
   for (const char *c = exponent + strspn (exponent, "+-"); *c >= '0' && *c <= '9'; c++) {
     power = power < 400 ? 10 * power + (*c - '0') : power;
   }
-  return *text ? 0.5 * unit * pow (10, minus ? -power : power) : 0;
+  double half = *text ? 0.5 * unit * pow (10, minus ? -power : power) : 0;
+  double cap = whole_most * fabs (figure ? figure->number : 0);
+  return !point && cap > 0 ? fmin (half, cap) : half;
 }
 
 /* The gas a volume is one of, as far as it is known.  */

@@ -103,7 +103,8 @@ bool flow_figure (struct reader_state *, const struct reading *flow, const struc
                   struct raw_fact *) MUST_CHECK;
 bool share_figure (struct reader_state *, const struct reading *flow,
                    const struct reading *figure, struct raw_fact *) MUST_CHECK;
-/* Half the unit of the last digit typed, in the unit of the figure; 0: exact.  */
+/* Half the unit of the last digit typed, in the unit of the figure, of a whole number at most
+   0.5 % of it; 0: exact.  */
 double digits_rounding (const struct node *);
 
 /* plant_spread.c: uncertainties of the facts that a line has added, FIRST on.  */

@@ -286,6 +286,7 @@ plant_verdict (struct evaluation *ev, const struct plant *plant, const struct ta
   redundant_facts (&m);
   close_balance (&m);
   negative_flows (&m);
+  verdict_moved (&m);
   verdict_around (&m);
   return verdict;
 }
