@@ -39,11 +39,13 @@ demodir = $(pkgdatadir)/tables/demo
 dist_demo_DATA = \
   %D%/demo/cleaned.csv \
   %D%/demo/digester.csv \
+  %D%/demo/header.gw \
   %D%/demo/morning.gw \
   %D%/demo/quarrel_blower.gw \
   %D%/demo/quarrel_controller.gw \
   %D%/demo/quarrel_lpg.gw \
   %D%/demo/quarrel_permit.gw \
+  %D%/demo/upgrading.gw \
   %D%/demo/week.gw
 
 # Made from the tables, in the build tree only: every table as text, the kinds of message, and

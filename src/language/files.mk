@@ -35,6 +35,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/check/sheet.h \
   %D%/check/trial.c \
   %D%/check/trial.h \
+  %D%/commands/balance_chart.c \
   %D%/commands/card_balance.c \
   %D%/commands/card_gas.c \
   %D%/commands/card_stream.c \
@@ -49,6 +50,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/commands/note_chart.c \
   %D%/commands/note_chart.h \
   %D%/commands/open.c \
+  %D%/commands/picture.c \
   %D%/commands/samples.c \
   %D%/commands/save.c \
   %D%/commands/set.c \

@@ -158,6 +158,7 @@ struct statement {
   /* set scf at ...; the place of the value, or of the setting's name where it has none.
      setting_words is the value as it is listed: "ISO 6976:2016".  */
   const struct unit *setting_unit; struct place setting_at;
+  bool picture;                   /* show NAME [in targets] as picture `text` */
   bool samples;                   /* show samples of: `name`, or a file as of gas from */
   /* show: all that the words can be, name, unit and property; then help's words */
   const struct unit *unit; bool has_property; enum property property;

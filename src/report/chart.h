@@ -13,9 +13,6 @@
 
 struct arena; struct text;
 
-/* More boxes than that are no picture any more.  */
-enum { CHART_BOXES_MOST = 200 };
-
 struct chart_plan;
 
 /* Where everything stands; in the arena.  The chart has at most CHART_BOXES_MOST boxes, at least

@@ -7,6 +7,8 @@
 
 #include <stddef.h>
 
+/* More boxes than that are no picture any more.  */
+enum { CHART_BOXES_MOST = 200 };
 enum { CHART_OUTSIDE = -1 };               /* in place of a box: the edge of the chart */
 
 struct chart_box { const char *name, *kind; };   /* "membrane", "separates" */
@@ -21,6 +23,15 @@ struct chart {
   size_t box_count, arrow_count;
   const struct chart_box *boxes;
   const struct chart_arrow *arrows;
+};
+
+/* A chart that becomes a file of its own, unless that is one of INPUTS (only `text`).  */
+struct note_row;
+struct picture {
+  const char *file;
+  const struct chart *chart;
+  const struct note_row *inputs;
+  struct picture *next;                    /* of the same statement: open */
 };
 
 #endif

@@ -9,8 +9,8 @@
 #include <stddef.h>
 #include "support/message.h"
 
-struct arena; struct balance_verdict; struct check_verdict; struct note; struct trend;
-struct workings_record;
+struct arena; struct balance_verdict; struct check_verdict; struct note; struct picture;
+struct trend; struct workings_record;
 
 /* What the uncertainty of a figure is made of: a line for each uncertain figure that moves it, the
    largest share first.  What they contribute is independent of each other.                      */
@@ -83,6 +83,7 @@ struct result {
   const struct trend *trend;                  /* of trend; or null */
   struct help_page *help;
   struct note *note;                          /* to be written; or null */
+  struct picture *picture;                    /* the same */
   bool quit;
 };
 

@@ -350,6 +350,9 @@ offer_at_place (struct search *search)
     case PLACE_LIST:
       offer_all (search, lists);
       break;
+    case PLACE_PICTURE:
+      offer (search, "picture");
+      break;
     case PLACE_FILE:
       search->found->is_file = true;
       break;

@@ -7,7 +7,9 @@
 #include <stdlib.h>
 #include <time.h>
 
+#include "report/chart.h"
 #include "report/note.h"
+#include "result/chart.h"
 #include "result/note.h"
 #include "result/result.h"
 #include "shell/descriptor.h"
@@ -30,50 +32,74 @@ date_write (char date[32])
 }
 
 static bool
-is_input (const struct note *note, const struct note_inputs *inputs)
+is_input (const char *name, const struct note_row *read, const struct note_inputs *inputs)
 {
   for (size_t i = 0; i < inputs->count; i++)
-    if (outfile_is_input (note->file, inputs->files[i]))
+    if (outfile_is_input (name, inputs->files[i]))
       return true;
-  for (const struct note_row *r = note->inputs; r != NULL; r = r->next)
-    if (outfile_is_input (note->file, r->text))
+  for (const struct note_row *r = read; r != NULL; r = r->next)
+    if (outfile_is_input (name, r->text))
       return true;
-  return inputs->running != NULL && outfile_is_input (note->file, inputs->running);
+  return inputs->running != NULL && outfile_is_input (name, inputs->running);
+}
+
+static bool
+write_file (const char *name, const struct text *text, struct fault *fault)
+{
+  struct outfile file;
+  if (!outfile_open (&file, name))
+    return fault_set (fault, MESSAGE_FILE, name, descriptor_reason (errno));
+  if (!descriptor_write (file.fd, text->bytes, text->length)) {
+    const int error = errno;
+    outfile_drop (&file);
+    return fault_set (fault, MESSAGE_FILE, name, descriptor_reason (error));
+  }
+  if (!outfile_keep (&file))
+    return fault_set (fault, MESSAGE_FILE, name, descriptor_reason (errno));
+  return true;
 }
 
 static bool
 write_one (const struct note *note, struct fault *fault)
 {
   char date[32];
-  struct outfile file;
   struct text text;
   date_write (date);
   const struct note_about about = { date, PACKAGE_STRING };
-  if (!outfile_open (&file, note->file))
-    return fault_set (fault, MESSAGE_FILE, note->file, descriptor_reason (errno));
   text_init (&text);
   note_write (&text, note_form_of (note->file), note, &about);
-  bool good = descriptor_write (file.fd, text.bytes, text.length);
+  const bool good = write_file (note->file, &text, fault);
   text_clear (&text);
-  if (!good) {
-    const int error = errno;
-    outfile_drop (&file);
-    return fault_set (fault, MESSAGE_FILE, note->file, descriptor_reason (error));
-  }
-  if (!outfile_keep (&file))
-    return fault_set (fault, MESSAGE_FILE, note->file, descriptor_reason (errno));
-  return true;
+  return good;
+}
+
+static bool
+write_picture (const struct picture *picture, struct fault *fault)
+{
+  struct text text;
+  text_init (&text);
+  chart_write (&text, picture->chart);
+  const bool good = write_file (picture->file, &text, fault);
+  text_clear (&text);
+  return good;
 }
 
 bool
 note_file_write (struct result *result, const struct note_inputs *inputs, struct fault *fault)
 {
   for (const struct note *note = result->note; note != NULL; note = note->next) {
-    if (is_input (note, inputs))
+    if (is_input (note->file, note->inputs, inputs))
       return fault_set (fault, MESSAGE_FILE_INPUT, note->file, NULL);
     if (!write_one (note, fault))
       return false;
     result_remark (result, MESSAGE_NOTE_WRITTEN, note->file, NULL);
+  }
+  for (const struct picture *p = result->picture; p != NULL; p = p->next) {
+    if (is_input (p->file, p->inputs, inputs))
+      return fault_set (fault, MESSAGE_FILE_INPUT, p->file, NULL);
+    if (!write_picture (p, fault))
+      return false;
+    result_remark (result, MESSAGE_NOTE_PICTURE_WRITTEN, p->file, NULL);
   }
   return true;
 }

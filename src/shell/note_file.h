@@ -1,4 +1,4 @@
-/* Writing calculation notes where they were asked for.  */
+/* Writing calculation notes and pictures where they were asked for.  */
 #ifndef SHELL_NOTE_FILE_H
 #define SHELL_NOTE_FILE_H
 
@@ -8,9 +8,9 @@
 
 struct fault; struct note; struct result; struct script;
 
-/* Writes the notes of RESULT, each beside its file and then in its place, and says so in RESULT.
-   INPUTS are COUNT files the run reads.  False with FAULT (kinds file-input, file) if one would
-   overwrite an input or cannot be written.                                                      */
+/* Writes the notes and pictures of RESULT, each beside its file and then in its place, and says so
+   in RESULT.  INPUTS are COUNT files the run reads.  False with FAULT (kinds file-input, file) if
+   one would overwrite an input or cannot be written.                                            */
 struct note_inputs { char *const *files; size_t count; const char *running; };
 bool note_file_write (struct result *, const struct note_inputs *, struct fault *) MUST_CHECK;
 

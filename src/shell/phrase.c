@@ -147,6 +147,17 @@ place_behind_comma (const struct phrase_word *clause)
   return phrase_word_is (clause, "at") ? PLACE_STATE : PLACE_OPERAND;
 }
 
+/* Behind the name that is shown: in UNIT as picture "FILE".  */
+static enum phrase_place
+place_behind_shown (const struct phrase_word *last)
+{
+  if (phrase_word_is (last, "as"))
+    return PLACE_PICTURE;
+  if (phrase_word_is (last, "picture"))
+    return PLACE_FILE;
+  return phrase_word_is (last, "in") ? PLACE_TARGET : PLACE_SHOWN;
+}
+
 static enum phrase_place
 place_behind (const struct phrase *phrase)
 {
@@ -157,6 +168,8 @@ place_behind (const struct phrase *phrase)
   const struct phrase_word *last = &phrase->words[phrase->count - 1];
   const enum phrase_place settled = place_behind_opening (phrase);
 
+  if (settled == PLACE_SHOWN && phrase->count > 2)
+    return place_behind_shown (last);
   if (settled != PLACE_WORD)
     return settled;
   if (is_number (last))

@@ -17,6 +17,7 @@ enum phrase_place {
   PLACE_SHOWN,                    /* anything that has a card */
   PLACE_SETTING, PLACE_VALUE,     /* a setting; what it can be set to */
   PLACE_TOPIC, PLACE_LIST,
+  PLACE_PICTURE,                  /* the word itself: show NAME as ... */
   PLACE_FILE,
   PLACE_WORD                      /* a word that goes on behind an operand */
 };

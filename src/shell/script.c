@@ -93,7 +93,7 @@ is_listing (const struct statement *statement)
          || statement->kind == STATEMENT_SET;
 }
 
-/* Writes the notes a statement of FILE asked for.  */
+/* Writes the notes and pictures a statement of FILE asked for.  */
 static bool
 write_notes (const struct script *script, const struct statement *statement, const char *file,
              struct result *result, struct fault *fault)
@@ -116,7 +116,8 @@ run_statement (struct script *script, const struct statement *statement, const c
   result_init (&result, script->arena, statement->source);
   if (!session_run (script->session, statement, &result, fault))
     return false;
-  if (result.note != NULL && !write_notes (script, statement, file, &result, fault))
+  if ((result.note != NULL || result.picture != NULL)
+      && !write_notes (script, statement, file, &result, fault))
     return false;
   take_digits (script);
   *answered = *answered || !result_is_empty (&result);

@@ -110,7 +110,7 @@ tell "$(LC_ALL=C "$awk" -v begin='```gaswright' -v end='```' -f "$here/replay.aw
   diff "$top/README.md" -)" "the sessions in README.md are what is printed"
 tell "$([ "$(grep -c '^```gaswright' "$top/README.md")" -ge 6 ] || echo "too few")" \
   "README.md has its sessions"
-for demo in morning week; do
+for demo in header morning upgrading week; do
   tell "$(LC_ALL=C.UTF-8 "$GASWRIGHT" $demo.gw > $demo.out 2> $demo.err || echo "exit status $?"
     cat $demo.err
     diff "$here/$demo.golden" $demo.out)" "the $demo at Larkmoor Works prints its answers"
@@ -138,6 +138,20 @@ if command -v python3 > out 2>&1; then
 else
   skip "no python3" "the morning's figures are those worked out apart from the program"
 fi
+
+if command -v python3 > out 2>&1; then
+  tell "$(PYTHONDONTWRITEBYTECODE=1 python3 "$here/demo_balances.py" upgrading.json header.json \
+    > said 2>&1 || { echo "it failed"; grep -v '^ok' said; }
+  grep -q '^ok' said || echo "nothing compared")" \
+    "the demo's balances are those worked out apart from the program"
+else
+  skip "no python3" "the demo's balances are those worked out apart from the program"
+fi
+tell "$(for demo in header upgrading; do
+    lines=$(wc -l < $demo.out)
+    { [ "$lines" -ge 24 ] && [ "$lines" -le 40 ]; } || echo "$demo: $lines lines"
+    [ -s $demo.svg ] || echo "$demo: no picture"
+  done)" "each balance takes one screen and draws its picture"
 
 # ---- DEVELOPERS.md ----
 

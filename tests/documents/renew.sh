@@ -27,7 +27,7 @@ LC_ALL=C "$awk" -f "$top/man/topics.awk" "$top/src/language/topics.def" "$top/ma
 cat page > "$top/man/gaswright.7"
 replay "$top/man/gaswright.7" .EX .EE -v roff=1
 replay "$top/README.md" '```gaswright' '```'
-for demo in morning week; do
+for demo in header morning upgrading week; do
   "$GASWRIGHT" $demo.gw > $demo.out
   cat $demo.out > "$here/$demo.golden"
 done

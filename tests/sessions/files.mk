@@ -23,6 +23,7 @@ session_tests = \
   %D%/files.sh \
   %D%/networks.sh \
   %D%/notes.sh \
+  %D%/pictures.sh \
   %D%/quarrels.sh \
   %D%/refused.sh \
   %D%/roundtrips.sh \

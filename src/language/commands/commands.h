@@ -23,6 +23,14 @@ command command_check, command_define, command_normalise, command_set, command_s
   command_forget, command_trim, command_trend, command_samples, command_save,
   command_open, command_help, command_undo, command_solve, command_workings, command_note;
 
+/* show NAME as picture (picture.c).  */
+bool picture_of (struct session *, const struct statement *, struct definition *, struct result *,
+                 struct fault *) MUST_CHECK;
+/* The files a session read, as rows (note.c); does a file's name end so?  */
+struct note_row;
+const struct note_row *note_inputs (const struct session *, struct arena *);
+bool note_ends_in (const char *file, const char *end);
+
 /* The cards of `show` (card_*.c).  */
 bool card_of_gas (struct session *, const struct gas_value *, const char *name,
                   struct result *, struct fault *) MUST_CHECK;
@@ -52,7 +60,7 @@ void card_add_limits (struct session *, struct result *, struct card *,
 const char *setting_name (enum setting);
 
 /* How a kept answer came about (workings.c), in the arena.  */
-struct arena; struct kept_answer; struct workings_record;
+struct kept_answer; struct workings_record;
 const struct workings_record *workings_of (struct session *, struct arena *, struct kept_answer *);
 
 #endif

@@ -8,9 +8,11 @@
 #include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/balance/plant.h"
 #include "language/evaluate/record.h"
 #include "language/evaluate/wording.h"
 #include "language/kept.h"
+#include "result/chart.h"
 #include "result/note.h"
 #include "result/result.h"
 #include "result/workings_record.h"
@@ -120,15 +122,40 @@ gases (const struct session *s, struct arena *arena)
   return first;
 }
 
-static const struct note_picture *
-pictures (const struct session *s, struct arena *arena)
+static struct note_picture **
+add_picture (struct arena *arena, const struct chart *chart, struct note_picture **last)
 {
-  const struct chart *chart = note_chart (s, arena);
-  struct note_picture *picture = chart ? ARENA_NEW (arena, struct note_picture) : NULL;
-  if (picture) {
-    picture->chart = chart;
+  if (!chart) {
+    return last;
   }
-  return picture;
+  *last = ARENA_NEW (arena, struct note_picture);
+  **last = (struct note_picture) { chart, NULL };
+  return &(*last)->next;
+}
+
+/* The streams, and each balance that has a solution.  */
+static const struct note_picture *
+pictures (struct session *s, struct arena *arena)
+{
+  struct note_picture *first = NULL;
+  struct note_picture **last = add_picture (arena, note_chart (s, arena), &first);
+  for (size_t i = 0; i < s->count; i++) {
+    const struct definition *d = s->order[i];
+    struct fault unheard;
+    struct evaluation ev;
+    if (d->kind != NAME_BALANCE || !d->fresh || !d->value.plant->solution
+        || d->value.plant->boundary_count > CHART_BOXES_MOST) {
+      continue;
+    }
+    fault_init (&unheard, arena);
+    evaluation_init (&ev, s, NULL, &unheard);
+    ev.arena = arena;
+    const struct balance_verdict *verdict = plant_verdict (&ev, d->value.plant, NULL);
+    if (verdict) {
+      last = add_picture (arena, balance_chart (&ev, d->value.plant, verdict, NULL), last);
+    }
+  }
+  return first;
 }
 
 /* ---- Results ---- */
@@ -187,8 +214,8 @@ results (struct session *s, struct arena *arena, unsigned *touched)
 
 /* ---- The whole ---- */
 
-static bool
-ends_in (const char *text, const char *end)
+bool
+note_ends_in (const char *text, const char *end)
 {
   size_t n = strlen (text), k = strlen (end);
   return n > k && strcmp (text + n - k, end) == 0;
@@ -204,8 +231,8 @@ title_of (struct arena *arena, const char *file)
 }
 
 /* Files that were read: none of them is written over.  */
-static const struct note_row *
-inputs (const struct session *s, struct arena *arena)
+const struct note_row *
+note_inputs (const struct session *s, struct arena *arena)
 {
   struct rows rows = rows_start (arena);
   for (size_t i = 0; i < s->count; i++)
@@ -238,7 +265,7 @@ command_note (struct session *s, const struct statement *statement, struct resul
     return fault_set_at (fault, MESSAGE_TEXT_EXPECTED, statement->text_at, "a file has a name",
                          NULL);
   }
-  if (!ends_in (statement->text, ".md") && !ends_in (statement->text, ".html")) {
+  if (!note_ends_in (statement->text, ".md") && !note_ends_in (statement->text, ".html")) {
     return fault_set_at (fault, MESSAGE_FILE_FORM, statement->text_at, statement->text, NULL);
   }
   struct note *note = ARENA_NEW (arena, struct note);
@@ -250,7 +277,7 @@ command_note (struct session *s, const struct statement *statement, struct resul
   note->gases = gases (s, arena);
   note->pictures = pictures (s, arena);
   note->statements = statements (s, arena);
-  note->inputs = inputs (s, arena);
+  note->inputs = note_inputs (s, arena);
   note->results_left_out = s->kept->beyond;
   note->statements_left_out = s->kept->lines_beyond;
   note->digits = s->settings.digits;

@@ -11,7 +11,7 @@
 #include "result/chart.h"
 #include "support/arena.h"
 
-enum { NOWHERE = -1, BOXES_MOST = 200 };
+enum { NOWHERE = -1 };
 
 /* What goes in and out of a box agrees to this, relative.  */
 static const double closed_within = 1e-9;
@@ -22,11 +22,13 @@ struct flow {
   const struct node *made;               /* its expression, without `at` */
   int parted_from;                       /* the stream it is made of; NOWHERE: none */
   int blend, parting;                    /* boxes: that makes it, that parts it; NOWHERE */
+  const char *told;                      /* its flow in the units asked for; null: kmol/h */
 };
 
 struct drawing {
-  const struct session *session;
+  struct session *session;
   struct arena *arena;
+  const struct definition *subject;      /* only that and what it leans on; null: all */
   struct flow *flows;
   size_t flow_count;
   struct chart_box *boxes;
@@ -62,19 +64,30 @@ parted_from (const struct drawing *d, const struct node *made)
                                                                    : NOWHERE;
 }
 
+static bool
+is_wanted (const struct drawing *d, const struct definition *definition)
+{
+  struct definition *subject = d->subject ? name_find (d->session, d->subject->name,
+                                                       strlen (d->subject->name)) : NULL;
+  return !subject || subject == definition
+         || definition_leans (d->session, subject, definition->name);
+}
+
 static void
 find_flows (struct drawing *d)
 {
   for (size_t i = 0; i < d->session->count; i++) {
     const struct definition *definition = d->session->order[i];
-    if (definition->kind != NAME_STREAM || !definition->fresh || !definition->value.stream.flow) {
+    if (definition->kind != NAME_STREAM || !definition->fresh || !definition->value.stream.flow
+        || !is_wanted (d, definition)) {
       continue;
     }
     const struct node *made = definition->statement->value;
     while (made->kind == NODE_AT) {
       made = made->a;
     }
-    d->flows[d->flow_count++] = (struct flow) { definition, made, NOWHERE, NOWHERE, NOWHERE };
+    d->flows[d->flow_count++] = (struct flow) { definition, made, NOWHERE, NOWHERE, NOWHERE,
+                                                  NULL };
   }
   for (size_t i = 0; i < d->flow_count; i++) {
     d->flows[i].parted_from = parted_from (d, d->flows[i].made);
@@ -107,37 +120,29 @@ find_boxes (struct drawing *d)
   }
 }
 
-/* "CH4 54.4, CO2 37.3 mol%": the two largest parts.  */
 static const char *
 parts_text (const struct drawing *d, const struct composition *gas)
 {
-  size_t first = 0, second = gas->count;
-  for (size_t i = 1; i < gas->count; i++) {
-    first = gas->fraction[i] > gas->fraction[first] ? i : first;
+  const char **keys = ARENA_ARRAY (d->arena, gas->count, const char *);
+  for (size_t i = 0; i < gas->count; i++) {
+    keys[i] = gas->species[i]->key;
   }
-  for (size_t i = 0; i < gas->count; i++)
-    if (i != first && (second == gas->count || gas->fraction[i] > gas->fraction[second])) {
-      second = i;
-    }
-  const char *one = arena_format (d->arena, "%s %s", gas->species[first]->key,
-                                  rough_text (d->arena, 100 * gas->fraction[first]));
-  return second == gas->count
-           ? arena_format (d->arena, "%s mol%%", one)
-           : arena_format (d->arena, "%s, %s %s mol%%", one, gas->species[second]->key,
-                           rough_text (d->arena, 100 * gas->fraction[second]));
+  return chart_parts (d->arena, gas->count, keys, gas->fraction);
 }
 
-/* The gas may be null: of a sum of feeds nobody named.  */
+/* The flow may be null: of a sum of feeds nobody named.  */
 static void
-add_arrow (struct drawing *d, const char *name, double moles, const struct composition *gas,
-           int from, int to)
+add_arrow (struct drawing *d, const char *name, double moles, const struct flow *f, int from,
+           int to)
 {
   d->in += from == CHART_OUTSIDE ? moles : 0;
   d->out += to == CHART_OUTSIDE ? moles : 0;
   d->arrows[d->arrow_count++] = (struct chart_arrow) {
     .name = arena_string (d->arena, name),
-    .flow = arena_format (d->arena, "%s kmol/h", figure_text (d->arena, 3.6 * moles)),
-    .parts = gas ? parts_text (d, gas) : NULL, .amount = moles, .from = from, .to = to };
+    .flow = f && f->told ? f->told
+            : arena_format (d->arena, "%s kmol/h", chart_figure (d->arena, 3.6 * moles)),
+    .parts = f ? parts_text (d, f->definition->value.stream.gas) : NULL,
+    .amount = moles, .from = from, .to = to };
 }
 
 /* ---- Where each stream goes ---- */
@@ -176,15 +181,15 @@ draw_flow (struct drawing *d, size_t i)
              : f->parted_from != NOWHERE ? d->flows[f->parted_from].parting : CHART_OUTSIDE;
   bool drawn = f->parting != NOWHERE;
   if (drawn) {
-    add_arrow (d, name, s->moles, s->gas, from, f->parting);
+    add_arrow (d, name, s->moles, f, from, f->parting);
   }
   for (size_t k = 0; k < d->flow_count; k++)
     if (d->flows[k].blend != NOWHERE && feeds (d, d->flows[k].made, (int) i)) {
-      add_arrow (d, name, s->moles, s->gas, drawn ? CHART_OUTSIDE : from, d->flows[k].blend);
+      add_arrow (d, name, s->moles, f, drawn ? CHART_OUTSIDE : from, d->flows[k].blend);
       drawn = true;
     }
   if (!drawn && from != CHART_OUTSIDE) {
-    add_arrow (d, name, s->moles, s->gas, from, CHART_OUTSIDE);
+    add_arrow (d, name, s->moles, f, from, CHART_OUTSIDE);
   }
 }
 
@@ -235,30 +240,101 @@ closure_text (const struct drawing *d)
                        by);
 }
 
-const struct chart *
-note_chart (const struct session *session, struct arena *arena)
+static void
+start (struct drawing *d, struct session *session, struct arena *arena)
 {
   const size_t n = session->count;
-  struct drawing d = { .session = session, .arena = arena,
-                       .flows = ARENA_ARRAY (arena, n + 1, struct flow),
-                       .boxes = ARENA_ARRAY (arena, 2 * n + 1, struct chart_box),
-                       .arrows = ARENA_ARRAY (arena, n * n + 4 * n + 1, struct chart_arrow) };
-  find_flows (&d);
-  find_boxes (&d);
-  if (d.box_count == 0 || d.box_count > BOXES_MOST) {
-    return NULL;
-  }
-  for (size_t i = 0; i < d.flow_count; i++) {
-    draw_flow (&d, i);
-    draw_unnamed (&d, &d.flows[i]);
-    if (!draw_rest (&d, i)) {
-      return NULL;                      /* it is parted in ways that cannot be at once */
+  d->session = session;
+  d->arena = arena;
+  d->flows = ARENA_ARRAY (arena, n + 1, struct flow);
+  find_flows (d);
+  const size_t flows = d->flow_count;
+  d->boxes = ARENA_ARRAY (arena, 2 * flows + 1, struct chart_box);
+  d->arrows = ARENA_ARRAY (arena, flows * flows + 4 * flows + 1, struct chart_arrow);
+  find_boxes (d);
+}
+
+/* Null: a stream is parted in ways that cannot be at once.  */
+static struct chart *
+draw (struct drawing *d)
+{
+  for (size_t i = 0; i < d->flow_count; i++) {
+    draw_flow (d, i);
+    draw_unnamed (d, &d->flows[i]);
+    if (!draw_rest (d, i)) {
+      return NULL;
     }
   }
-  struct chart *chart = ARENA_NEW (arena, struct chart);
+  struct chart *chart = ARENA_NEW (d->arena, struct chart);
   *chart = (struct chart) {
-    .title = "Streams", .box_count = d.box_count, .boxes = d.boxes, .arrow_count = d.arrow_count,
-    .arrows = d.arrows, .basis = "lines as wide as the flows, by amount, of the gas with its water",
-    .closure = closure_text (&d) };
+    .title = "Streams", .box_count = d->box_count, .boxes = d->boxes,
+    .arrow_count = d->arrow_count, .arrows = d->arrows,
+    .basis = "lines as wide as the flows, by amount, of the gas with its water",
+    .closure = closure_text (d) };
+  return chart;
+}
+
+const struct chart *
+note_chart (struct session *session, struct arena *arena)
+{
+  struct drawing d = { .subject = NULL };
+  start (&d, session, arena);
+  return d.box_count == 0 || d.box_count > CHART_BOXES_MOST ? NULL : draw (&d);
+}
+
+/* Every flow in the units asked for.  */
+static bool
+tell_flows (struct evaluation *ev, struct drawing *d, const struct target *targets)
+{
+  for (size_t i = 0; targets && i < d->flow_count; i++) {
+    struct flow *f = &d->flows[i];
+    const struct subject subject = { f->definition->name, targets->at };
+    for (const struct target *t = targets; t; t = t->next) {
+      struct figures figures = { NULL, 0, 0 };
+      struct target alone = *t;
+      alone.next = NULL;
+      if (!convert_value (ev, &f->definition->value, &alone, &subject, &figures)) {
+        return false;
+      }
+      f->told = arena_format (d->arena, "%s%s%s %s", f->told ? f->told : "", f->told ? ", " : "",
+                              chart_figure (d->arena, figures.at[0].value),
+                              figures.at[0].unit_text);
+    }
+  }
+  return true;
+}
+
+const struct chart *
+stream_chart (struct evaluation *ev, const struct definition *subject,
+              const struct target *targets)
+{
+  struct drawing d = { .subject = subject };
+  start (&d, ev->session, ev->arena);
+  if (d.box_count == 0) {
+    fault_set (ev->fault, MESSAGE_PICTURE_NONE, subject->name,
+               subject->maker ? arena_format (ev->arena, "balance %s made it; draw that",
+                                              subject->maker)
+                              : "it is no blend, share or remainder of flows");
+    return NULL;
+  }
+  if (d.box_count > CHART_BOXES_MOST) {
+    fault_set (ev->fault, MESSAGE_PICTURE_LARGE, subject->name,
+               arena_format (ev->arena, "%zu boxes, of at most %d", d.box_count,
+                             CHART_BOXES_MOST));
+    return NULL;
+  }
+  if (!tell_flows (ev, &d, targets)) {
+    return NULL;
+  }
+  struct chart *chart = draw (&d);
+  if (!chart) {
+    fault_set (ev->fault, MESSAGE_PICTURE_NONE, subject->name,
+               "the shares taken of a stream are more than all of it");
+    return NULL;
+  }
+  chart->title = arena_format (ev->arena, "Stream %s", subject->name);
+  if (targets) {
+    chart->basis = arena_format (ev->arena, "%s; %s", chart_units (ev, targets), chart->basis);
+  }
   return chart;
 }

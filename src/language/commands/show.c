@@ -82,6 +82,9 @@ command_show (struct session *session, const struct statement *s, struct result 
   if (s->samples) {
     return command_samples (session, s, result, fault);
   }
+  if (s->picture) {
+    return d ? picture_of (session, s, d, result, fault) : unknown (session, s, fault);
+  }
   if (s->text && (!d || d->kind != NAME_BALANCE)) {
     return d ? fault_set_at (fault, MESSAGE_KIND_WRONG, s->text_at,
                              "equations, matrix and detectability are those of a balance", NULL)

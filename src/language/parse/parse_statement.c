@@ -158,6 +158,36 @@ parse_balance_part (struct parser *p, struct statement *statement)
   return expect_end (p, "show NAME equations");
 }
 
+/* NAME with "as" or "in" behind it  */
+static bool
+opens_picture (const struct parser *p)
+{
+  struct token behind = token_behind (p);
+  return at_name (p) && (token_is (p, &behind, "as") || token_is (p, &behind, "in"));
+}
+
+/* NAME [ "in" target { "," target } ] "as" "picture" TEXT  */
+static bool
+parse_picture (struct parser *p, struct statement *statement)
+{
+  const char *form = "show NAME as picture \"chart.svg\", show NAME in kg/h as picture ...";
+  const struct node *name = parse_name (p, form);
+  if (name == NULL)
+    return false;
+  statement->picture = true;
+  statement->name = name->text;
+  statement->name_at = name->at;
+  if (accept_word (p, "in") && (statement->targets = parse_targets (p, false)) == NULL)
+    return false;
+  for (const struct target *t = statement->targets; t; t = t->next)
+    if (t->as != NULL)
+      return fail (p, MESSAGE_WORD_UNEXPECTED, t->at, t->as, "a picture has no labels of its own");
+  if (!expect_word (p, "as", form) || !expect_word (p, "picture", form))
+    return false;
+  statement->text_at = p->token.at;
+  return expect_text (p, &statement->text, form) && expect_end (p, form);
+}
+
 /* "show" ( NAME | UNIT | PROPERTY ): all of these that it can be; or "samples"  */
 static bool
 parse_show (struct parser *p, struct statement *statement)
@@ -167,6 +197,8 @@ parse_show (struct parser *p, struct statement *statement)
     return parse_samples (p, statement);
   if (at_balance_part (p))
     return parse_balance_part (p, statement);
+  if (opens_picture (p))
+    return parse_picture (p, statement);
   struct unit_read read = { NULL, NULL, { 0, 0, 0 } };
   struct scanner behind;
   bool unit = unit_at (p, &p->token, &read, &behind);

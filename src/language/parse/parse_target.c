@@ -153,6 +153,14 @@ parse_conditions (struct parser *p, struct target *target, const struct unit_rea
   return true;
 }
 
+bool
+at_picture (const struct parser *p)
+{
+  struct parser ahead = *p;
+  return accept_word (&ahead, "as") && accept_word (&ahead, "picture")
+         && ahead.token.kind == TOKEN_TEXT;
+}
+
 static struct target *
 parse_target (struct parser *p)
 {
@@ -170,7 +178,7 @@ parse_target (struct parser *p)
   }
   if (!parse_conditions (p, target, &read))
     return NULL;
-  if (accept_word (p, "as")) {
+  if (!at_picture (p) && accept_word (p, "as")) {
     const struct node *name = parse_name (p, "as NAME");
     if (name == NULL)
       return NULL;
