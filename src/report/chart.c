@@ -54,14 +54,15 @@ trace_back (const struct chart_plan *plan, size_t a, struct trace *trace)
   const struct chart_arrow *arrow = &plan->chart->arrows[a];
   const double out = plan->bends[plan->column[arrow->from]];
   const double in = plan->enters[plan->column[arrow->to]], lane = plan->lane[a];
-  const double bend = 0.4 * CHART_BEND;
+  const double round = 0.45 * CHART_BEND * plan->reach_out[a];
+  const double back = 0.45 * CHART_BEND * plan->reach_in[a];
   add_point (trace, CANVAS_LINE, out, plan->leaves[a]);
-  add_point (trace, CANVAS_CURVE, out + bend, plan->leaves[a]);
-  add_point (trace, CANVAS_CURVE, out + bend, lane);
+  add_point (trace, CANVAS_CURVE, out + round, plan->leaves[a]);
+  add_point (trace, CANVAS_CURVE, out + round, lane);
   add_point (trace, CANVAS_CURVE, out, lane);
   add_point (trace, CANVAS_LINE, in, lane);
-  add_point (trace, CANVAS_CURVE, in - bend, lane);
-  add_point (trace, CANVAS_CURVE, in - bend, plan->arrives[a]);
+  add_point (trace, CANVAS_CURVE, in - back, lane);
+  add_point (trace, CANVAS_CURVE, in - back, plan->arrives[a]);
   add_point (trace, CANVAS_CURVE, in, plan->arrives[a]);
 }
 

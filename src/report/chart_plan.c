@@ -32,6 +32,69 @@ find_loops (const struct chart *chart, int b, char state[], bool back[])
   state[b] = 2;
 }
 
+/* Does what is KEPT lead from box B to box END?  */
+static bool
+leads_to (const struct chart *chart, const bool kept[], int b, int end, char seen[])
+{
+  if (b == end)
+    return true;
+  seen[b] = 1;
+  for (size_t a = 0; a < chart->arrow_count; a++) {
+    const int to = chart->arrows[a].to;
+    if (kept[a] && chart->arrows[a].from == b && !seen[to]
+        && leads_to (chart, kept, to, end, seen))
+      return true;
+  }
+  return false;
+}
+
+/* Is arrow A to be kept before B: larger, or no smaller and no loop's end as it is?  */
+static bool
+goes_before (const struct chart *chart, const bool back[], size_t a, size_t b)
+{
+  static const double as_large = 1e-6;            /* relative: less is rounding */
+  const double difference = chart->arrows[a].amount - chart->arrows[b].amount;
+  if (fabs (difference) <= as_large * fabs (chart->arrows[b].amount))
+    return !back[a] && back[b];
+  return difference > 0;
+}
+
+/* Arrows between boxes, the largest first; returns how many, 0 if one's amount is not known.  */
+static size_t
+sort_inner (const struct chart *chart, const bool back[], size_t sorted[])
+{
+  size_t n = 0;
+  for (size_t a = 0; a < chart->arrow_count; a++) {
+    const struct chart_arrow *arrow = &chart->arrows[a];
+    if (arrow->from == CHART_OUTSIDE || arrow->to == CHART_OUTSIDE)
+      continue;
+    if (isnan (arrow->amount))
+      return 0;
+    size_t k = n++;
+    for (; k > 0 && goes_before (chart, back, a, sorted[k - 1]); k--)
+      sorted[k] = sorted[k - 1];
+    sorted[k] = a;
+  }
+  return n;
+}
+
+/* Where all amounts are known a loop is closed by its smallest flow: what is blown round a burner
+   goes back, not its air.                                                                       */
+static void
+close_by_smallest (struct arena *arena, const struct chart *chart, bool back[])
+{
+  size_t *sorted = ARENA_ARRAY (arena, chart->arrow_count, size_t);
+  bool *kept = ARENA_ARRAY (arena, chart->arrow_count, bool);
+  char *seen = ARENA_ARRAY (arena, chart->box_count, char);
+  const size_t n = sort_inner (chart, back, sorted);
+  for (size_t i = 0; i < n; i++) {
+    const struct chart_arrow *arrow = &chart->arrows[sorted[i]];
+    memset (seen, 0, chart->box_count);
+    back[sorted[i]] = leads_to (chart, kept, arrow->to, arrow->from, seen);
+    kept[sorted[i]] = !back[sorted[i]];
+  }
+}
+
 static bool
 feeds_from_outside (const struct chart *chart, int b)
 {
@@ -52,6 +115,7 @@ find_columns (struct arena *arena, struct chart_plan *plan, bool back[])
     for (size_t b = 0; b < chart->box_count; b++)
       if (state[b] == 0 && feeds_from_outside (chart, (int) b) >= outside)
         find_loops (chart, (int) b, state, back);
+  close_by_smallest (arena, chart, back);
   for (bool moved = true; moved;) {
     moved = false;
     for (size_t a = 0; a < chart->arrow_count; a++) {
@@ -225,6 +289,66 @@ slot_side (const struct chart_plan *plan, const bool back[], size_t b, bool inle
     (inlet ? plan->arrives : plan->leaves)[sorted[k]] = y + CHART_SLOT - 0.5 * CHART_WIDEST - 5;
 }
 
+/* ---- Lanes ---- */
+
+/* Does A run in a lane above that of B?  The shorter way, and of two from one column that which
+   leaves further down: so neither crosses the other on its way down.                            */
+static bool
+runs_above (const struct chart_plan *plan, size_t a, size_t b)
+{
+  const struct chart_arrow *one = &plan->chart->arrows[a], *other = &plan->chart->arrows[b];
+  const size_t way = plan->column[one->from] - plan->column[one->to];
+  const size_t other_way = plan->column[other->from] - plan->column[other->to];
+  return way != other_way ? way < other_way : plan->leaves[a] > plan->leaves[b];
+}
+
+/* How far round the lane of arrow LANES[I] bends, from 0 to 1: further than those inside it.  */
+static double
+reach_of (const struct chart_plan *plan, const size_t lanes[], size_t n, size_t i, bool in)
+{
+  size_t inside = 0, all = 0;
+  const struct chart_arrow *arrows = plan->chart->arrows, *arrow = &arrows[lanes[i]];
+  const size_t column = plan->column[in ? arrow->to : arrow->from];
+  for (size_t k = 0; k < n; k++)
+    if (plan->column[in ? arrows[lanes[k]].to : arrows[lanes[k]].from] == column) {
+      all++;
+      inside += k <= i;
+    }
+  return (double) inside / (double) all;
+}
+
+/* One below the other from Y on, and what they meet at one box from the outer one down; returns
+   where they end.                                                                               */
+static double
+place_lanes (struct arena *arena, struct chart_plan *plan, const bool back[], double y)
+{
+  const struct chart_arrow *arrows = plan->chart->arrows;
+  size_t *lanes = ARENA_ARRAY (arena, plan->chart->arrow_count, size_t), n = 0;
+  for (size_t a = 0; a < plan->chart->arrow_count; a++) {
+    if (!back[a])
+      continue;
+    size_t k = n++;
+    for (; k > 0 && runs_above (plan, a, lanes[k - 1]); k--)
+      lanes[k] = lanes[k - 1];
+    lanes[k] = a;
+  }
+  for (size_t i = 0; i < n; i++, y += CHART_LANE) {
+    const size_t a = lanes[i];
+    plan->lane[a] = y;
+    plan->reach_out[a] = reach_of (plan, lanes, n, i, false);
+    plan->reach_in[a] = reach_of (plan, lanes, n, i, true);
+    for (size_t k = i + 1; k < n; k++) {
+      const size_t b = lanes[k];
+      if (arrows[a].to == arrows[b].to && plan->arrives[a] < plan->arrives[b]) {
+        const double other = plan->arrives[a];
+        plan->arrives[a] = plan->arrives[b];
+        plan->arrives[b] = other;
+      }
+    }
+  }
+  return y;
+}
+
 static void
 find_heights (struct arena *arena, struct chart_plan *plan, const bool back[],
               const struct column columns[])
@@ -242,13 +366,7 @@ find_heights (struct arena *arena, struct chart_plan *plan, const bool back[],
     slot_side (plan, back, b, true, sorted);
     slot_side (plan, back, b, false, sorted);
   }
-  double y = CHART_HEAD + most + CHART_LANE;
-  for (size_t a = 0; a < chart->arrow_count; a++)
-    if (back[a]) {
-      plan->lane[a] = y;
-      y += CHART_LANE;
-    }
-  plan->height = y + CHART_FOOT;
+  plan->height = place_lanes (arena, plan, back, CHART_HEAD + most + CHART_LANE) + CHART_FOOT;
 }
 
 /* ---- Widths ---- */
@@ -344,6 +462,8 @@ chart_plan (struct arena *arena, const struct chart *chart)
   plan->leaves = ARENA_ARRAY (arena, arrows, double);
   plan->arrives = ARENA_ARRAY (arena, arrows, double);
   plan->lane = ARENA_ARRAY (arena, arrows, double);
+  plan->reach_out = ARENA_ARRAY (arena, arrows, double);
+  plan->reach_in = ARENA_ARRAY (arena, arrows, double);
   plan->widths = ARENA_ARRAY (arena, arrows, double);
   plan->through = ARENA_ARRAY (arena, arrows, double *);
   bool *back = ARENA_ARRAY (arena, arrows, bool);

@@ -27,6 +27,7 @@ struct chart_plan {
   /* By arrow: heights of its slots where it leaves and where it arrives, the column of its lane
      (0: goes forward) and, in `through`, its height in the columns it passes.                   */
   double *leaves, *arrives, *lane, **through;
+  double *reach_out, *reach_in;  /* how far round its lane bends at both ends, 0 to 1 */
   double *widths;                /* of the lines */
   /* By column: left end of the boxes, their right end; behind them labels, up to `bends`; and
      where the next column's own labels begin.  Zone 0 is in front of the first column.          */

@@ -6,7 +6,7 @@
 #include <string.h>
 
 #include "libtest.h"
-#include "report/chart.h"
+#include "report/chart_plan.h"
 #include "support/arena.h"
 #include "support/text.h"
 
@@ -130,7 +130,57 @@ at_random (void)
   }
 }
 
+/* Air, mixed with flue gas that is blown round, into a burner: the burner comes first in the list,
+   and yet the air goes forward and what is blown round goes back.                               */
+static void
+smallest_goes_back (void)
+{
+  static const struct chart_box boxes[] = { { "burner", "reacts" }, { "fan", "splits" },
+                                            { "box", "mixes" } };
+  static const struct chart_arrow arrows[] = {
+    { "fuel", NULL, NULL, 10, CHART_OUTSIDE, 0 },     { "air", NULL, NULL, 143, 2, 0 },
+    { "flue", NULL, NULL, 153, 0, 1 },                { "round", NULL, NULL, 23, 1, 2 },
+    { "stack", NULL, NULL, 130, 1, CHART_OUTSIDE },   { "fresh", NULL, NULL, 120, CHART_OUTSIDE, 2 }
+  };
+  const struct chart chart = { "burner", "flows in kmol/h", NULL, 3, 6, boxes, arrows };
+  struct arena *arena = arena_create ();
+  const struct chart_plan *plan = chart_plan (arena, &chart);
+  CHECK (plan->boxes[2].x < plan->boxes[0].x && plan->boxes[0].x < plan->boxes[1].x);
+  CHECK (plan->lane[3] > 0);
+  for (size_t a = 0; a < chart.arrow_count; a++)
+    CHECK (a == 3 || !(plan->lane[a] > 0));
+  look (&chart);
+  arena_destroy (arena);
+}
+
+/* Two that go back the same way: the inner one runs inside the outer one all along.  */
+static void
+lanes_do_not_cross (void)
+{
+  static const struct chart_box boxes[] = { { "mixer", "mixes" }, { "stage", "separates" },
+                                            { "t1", "splits" }, { "t2", "splits" } };
+  static const struct chart_arrow arrows[] = {
+    { "fresh", NULL, NULL, 100, CHART_OUTSIDE, 0 },   { "back-one", NULL, NULL, 29, 2, 0 },
+    { "back-two", NULL, NULL, 37, 3, 0 },             { "inflow", NULL, NULL, 165, 0, 1 },
+    { "side", NULL, NULL, 36, 1, 2 },                 { "bottom", NULL, NULL, 52, 1, 3 },
+    { "bleed", NULL, NULL, 7, 2, CHART_OUTSIDE },     { "drain", NULL, NULL, 15, 3, CHART_OUTSIDE }
+  };
+  const struct chart chart = { "loops", "flows in kmol/h", NULL, 4, 8, boxes, arrows };
+  struct arena *arena = arena_create ();
+  const struct chart_plan *plan = chart_plan (arena, &chart);
+  const size_t inner = plan->lane[1] < plan->lane[2] ? 1 : 2, outer = 3 - inner;
+  CHECK (plan->lane[inner] > 0);
+  CHECK (plan->leaves[inner] > plan->leaves[outer]);
+  CHECK (plan->arrives[inner] > plan->arrives[outer]);
+  CHECK (plan->reach_out[inner] < plan->reach_out[outer]);
+  CHECK (plan->reach_in[inner] < plan->reach_in[outer]);
+  look (&chart);
+  arena_destroy (arena);
+}
+
 static const struct test_case cases[] = {
+  { "a loop is closed by its smallest flow", smallest_goes_back },
+  { "lanes do not cross", lanes_do_not_cross },
   { "a recycle with its purge can be read", recycle_and_purge },
   { "no label hides another, whatever is joined", at_random },
   { NULL, NULL }
