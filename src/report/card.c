@@ -5,7 +5,10 @@
           CH4 ......   58.2000      34.0117      58.2
 
    Figures of a column are aligned at the decimal sign and the heading stands at it; a column
-   without any figure is text, aligned at the left as is its heading.                            */
+   without any figure is text, aligned at the left as is its heading.
+
+   A card that may be parted and is wider than a line is set closer; if that does not do, its
+   columns stand in bands one below the other, each with the names and a last column of text.    */
 #include "config.h"
 #include "report/report_private.h"
 
@@ -15,10 +18,13 @@
 #include "support/memory.h"
 #include "support/text.h"
 
-enum { GAP = 3 };
+enum { GAP = 3, CLOSE_GAP = 2 };
 
 /* A column: room before and behind the decimal sign; of text: none before.  */
 struct column { size_t before, behind; bool is_text; };
+
+/* The columns of a card that stand side by side, by their number in it.  */
+struct band { const struct column *columns; size_t name_width, gap, count, *which; };
 
 /* 5.00000 as 5, 0.100500 as 0.1005; a figure with an exponent stays.  */
 static void
@@ -89,41 +95,44 @@ has_headings (const struct card *card)
 
 static void
 headings_add (struct text *out, const struct report_style *style, const struct card *card,
-              const struct column columns[], size_t name_width)
+              const struct band *band)
 {
-  size_t blanks = MARGIN + name_width;
-  for (size_t i = 0; i < card->columns; i++) {
+  size_t blanks = MARGIN + band->name_width;
+  for (size_t k = 0; k < band->count; k++) {
+    const size_t i = band->which[k];
     const size_t used = shown_width (style, card->headings[i]);
-    blanks += GAP + columns[i].before;
+    blanks += band->gap + band->columns[i].before;
     if (used > 0) {
       text_add_repeated (out, ' ', blanks);
       shown_add (out, style, card->headings[i]);
       blanks = 0;
     }
-    blanks += columns[i].behind - used;
+    blanks += band->columns[i].behind - used;
   }
   text_add_char (out, '\n');
 }
 
 /* A row, with the weight of a figure for its numbers; no blanks at the end.  */
 static void
-row_add (struct text *out, const struct report_style *style, const struct card *card,
-         const struct card_row *row, const struct column columns[])
+row_add (struct text *out, const struct report_style *style, const struct card_row *row,
+         const struct band *band)
 {
   struct text scratch;
   text_init (&scratch);
   size_t blanks = 0;
-  for (size_t i = 0; i < card->columns; i++) {
-    const char *shown = cell_write (&scratch, style, &row->cells[i]);
-    const size_t before = cell_before (&columns[i], &row->cells[i], shown);
+  for (size_t k = 0; k < band->count; k++) {
+    const struct column *column = &band->columns[band->which[k]];
+    const struct cell *cell = &row->cells[band->which[k]];
+    const char *shown = cell_write (&scratch, style, cell);
+    const size_t before = cell_before (column, cell, shown);
     const size_t width = utf8_characters (shown, strlen (shown));
-    blanks += GAP + columns[i].before - before;
+    blanks += band->gap + column->before - before;
     if (width > 0) {
       text_add_repeated (out, ' ', blanks);
       text_add (out, shown);
       blanks = 0;
     }
-    blanks += columns[i].behind + before - width;
+    blanks += column->behind + before - width;
   }
   text_add_char (out, '\n');
   text_clear (&scratch);
@@ -142,35 +151,87 @@ name_column (const struct report_style *style, const struct card *card)
 }
 
 static void
+band_add (struct text *out, const struct report_style *style, const struct card *card,
+          const struct band *band)
+{
+  if (has_headings (card))
+    headings_add (out, style, card, band);
+  for (const struct card_row *r = card->rows; r != NULL; r = r->next) {
+    text_add_repeated (out, ' ', MARGIN);
+    leader_add (out, style, r->name, band->name_width);
+    row_add (out, style, r, band);
+  }
+}
+
+/* Of some columns side by side.  */
+static size_t
+columns_width (const struct band *band, size_t from, size_t to)
+{
+  size_t width = 0;
+  for (size_t i = from; i < to; i++)
+    width += band->gap + band->columns[i].before + band->columns[i].behind;
+  return width;
+}
+
+/* As many columns as a line holds, one group of them at the least, then the last one.  */
+static void
+bands_add (struct text *out, const struct report_style *style, const struct card *card,
+           struct band *band, size_t room)
+{
+  const bool repeats = band->columns[card->columns - 1].is_text;
+  const size_t last = card->columns - repeats;
+  const size_t tail = columns_width (band, last, card->columns);
+  for (size_t from = 0, to; from < last; from = to) {
+    to = from;
+    do
+      to += card->together < last - to ? card->together : last - to;
+    while (to < last
+           && columns_width (band, from, to + card->together < last ? to + card->together : last)
+                + tail <= room);
+    band->count = 0;
+    for (size_t i = from; i < to; i++)
+      band->which[band->count++] = i;
+    if (repeats)
+      band->which[band->count++] = last;
+    band_add (out, style, card, band);
+  }
+}
+
+static void
 rows_add (struct text *out, const struct report_style *style, const struct card *card,
-          struct column columns[])
+          struct column columns[], size_t which[])
 {
   struct text scratch;
   text_init (&scratch);
-  for (size_t i = 0; i < card->columns; i++)
+  for (size_t i = 0; i < card->columns; i++) {
     column_measure (&columns[i], &scratch, style, card, i);
-  text_clear (&scratch);
-  const size_t width = name_column (style, card);
-  if (has_headings (card))
-    headings_add (out, style, card, columns, width);
-  for (const struct card_row *r = card->rows; r != NULL; r = r->next) {
-    text_add_repeated (out, ' ', MARGIN);
-    leader_add (out, style, r->name, width);
-    row_add (out, style, card, r, columns);
+    which[i] = i;
   }
+  text_clear (&scratch);
+  struct band band = { columns, name_column (style, card), GAP, card->columns, which };
+  const size_t used = MARGIN + band.name_width;
+  const size_t room = used < LINE_WIDTH ? LINE_WIDTH - used : 0;
+  if (card->together > 0 && columns_width (&band, 0, card->columns) > room)
+    band.gap = CLOSE_GAP;
+  if (card->together > 0 && columns_width (&band, 0, card->columns) > room)
+    bands_add (out, style, card, &band, room);
+  else
+    band_add (out, style, card, &band);
 }
 
 void
 report_card (struct text *out, const struct report_style *style, const struct card *card)
 {
   struct column *columns = memory_get (card->columns + 1, sizeof *columns);
+  size_t *which = memory_get (card->columns + 1, sizeof *which);
   tab_add (out, style, card->title, card->kind);
   if (card->rows != NULL)
-    rows_add (out, style, card, columns);
+    rows_add (out, style, card, columns, which);
   for (const struct card_line *l = card->lines; l != NULL; l = l->next) {
     text_add_repeated (out, ' ', MARGIN);
     shown_add (out, style, l->text);
     text_add_char (out, '\n');
   }
+  memory_release (which);
   memory_release (columns);
 }

@@ -20,6 +20,7 @@ struct report_origin; struct result; struct step; struct trend; struct workings_
 enum {
   MARGIN_MARK = 2,
   MARGIN = 6,
+  LINE_WIDTH = 100,             /* what a card that can be parted keeps within */
   CARD_WIDTH = 62,              /* of the line with the tab, without the margin */
   NAME_WIDTH = 10,              /* a name with its dots, at least */
   NAME_DOTS = 4,                /* a blank and three dots behind the longest name */

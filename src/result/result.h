@@ -60,6 +60,7 @@ struct card_line { const char *text; struct card_line *next; };
 struct card {
   const char *title, *kind;       /* "raw"; "gas, dry, 5 parts" */
   size_t columns;
+  size_t together;                /* so many columns a step, parted if too wide; 0: not */
   const char *const *headings;    /* of the columns, without the name column */
   struct card_row *rows, **last_row;
   struct card_line *lines, **last_line;

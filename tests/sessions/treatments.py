@@ -77,6 +77,16 @@ def each_says(tap):
                     r"O2 \.+ +0 +1\.10000 +0 +1\.29\d* +0 +15\.70\d* +1\.1",
                     r"raw: as stated, total 100\.7 mol%"):
         tap.tell([] if re.search(pattern, card) else [pattern, card], "the card has " + pattern)
+    card = session.run("gas lab = CH4 57.42 ± 0.30 (k=2), CO2 39.61 ± 0.25 (k=2), N2 1.83, "
+                       "O2 0.52, H2S 8 ± 4 ppm mol% dry\ngas g = lab normalised\nshow g\n",
+                       "text")[1].split("molar mass")[0]
+    wide = [line for line in card.split("\n") if len(line) > 100]
+    tap.tell(wide, "the card of a long analysis keeps within 100 columns")
+    for pattern in (r"\n +mol% +raw mol% +mass% +raw mass% +stated as\n",
+                    r"\n +g/Nm3 +raw g/Nm3 +stated as\n",
+                    r"\n +H2S \.+ +0\.000[^\n]+ 8 ppm . 4\n(.*\n)*.*H2S \.+ +0\.012[^\n]+ 8 ppm"):
+        tap.tell([] if re.search(pattern, card) else [pattern, card],
+                 "every basis stands beside its raw figure: " + pattern)
 
 
 def below(tap):

@@ -267,6 +267,7 @@ closed_card (struct session *session, const struct gas_value *gas, const char *n
   struct card *card = result_card (result, name, kind_text (session, result->arena, c, "gas"),
                                    (raw.analysis ? 6u : 3u) + (gas->list != NULL),
                                    raw.analysis ? treated : plain);
+  card->together = raw.analysis ? 2 : 1;
   for (size_t i = 0; raw.analysis && i < raw.analysis->count; i++) {
     part_row (session, gas, &raw, raw.analysis->parts[i].species, result, card);
   }

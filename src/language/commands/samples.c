@@ -280,6 +280,7 @@ show_table (const struct table *t)
                                    arena_format (arena, "%zu sample%s, %s", t->count,
                                                  t->count == 1 ? "" : "s", moisture),
                                    columns, headings);
+  card->together = 1;
   for (size_t i = 0; i < t->count; i++) {
     struct cell *cells = card_add_row (t->result, card, t->rows[i].name);
     for (size_t k = 0; k < columns; k++) {
