@@ -33,21 +33,6 @@ larger (size_t a, size_t b)
 }
 
 static void
-plain_figure (struct text *out, const struct report_style *style, double value)
-{
-  const size_t start = out->length;
-  figure_write (out, style, value);
-  /* In a sentence 5.00000 is 5.  */
-  if (strchr (out->bytes + start, '.') == NULL || strchr (out->bytes + start, 'e') != NULL)
-    return;
-  while (out->bytes[out->length - 1] == '0')
-    out->length--;
-  if (out->bytes[out->length - 1] == '.')
-    out->length--;
-  out->bytes[out->length] = '\0';
-}
-
-static void
 measure_one (const struct report_style *style, struct column *column, double value,
              const char *unit)
 {
@@ -164,7 +149,7 @@ static void
 distance_add (struct text *out, const struct report_style *style,
               const struct check_verdict *v)
 {
-  plain_figure (out, style, fabs (v->difference));
+  figure_plain (out, style, fabs (v->difference));
   text_add_char (out, ' ');
   shown_add (out, style, v->unit);
   if (isfinite (v->deviation)) {
@@ -185,7 +170,7 @@ difference_add (struct text *out, const struct report_style *style, const struct
   else
     distance_add (out, style, v);
   text_add (out, "; good to ");
-  plain_figure (out, style, v->limit);
+  figure_plain (out, style, v->limit);
   text_add (out, v->by_digits ? " by its digits" : " by its uncertainty");
   if (uncertain)
     text_add (out, v->by_digits ? " and the uncertainty of the computed figure"
@@ -258,7 +243,7 @@ computed_add (struct text *out, const struct report_style *style, const struct c
   if (a != NULL && figure_is_uncertain (a->value, a->uncertainty)) {
     text_add (out, moist || based ? ", " : "");
     text_add (out, style->unicode ? "\u00B1 " : "+/- ");
-    plain_figure (out, style, a->uncertainty);
+    figure_plain (out, style, a->uncertainty);
   }
   line_end (out);
 }
@@ -316,9 +301,9 @@ needs_add (struct text *out, const struct report_style *style, const struct chec
       text_add (out, "no ");
       shown_add (out, style, n->what);
       text_add (out, " from ");
-      plain_figure (out, style, n->least);
+      figure_plain (out, style, n->least);
       text_add (out, " to ");
-      plain_figure (out, style, n->greatest);
+      figure_plain (out, style, n->greatest);
       text_add_char (out, ' ');
       shown_add (out, style, n->unit);
       text_add (out, *n->unit ? " does it" : "does it");

@@ -24,7 +24,7 @@ figure_write (struct text *out, const struct report_style *style, double value)
 }
 
 void
-figure_in_formula (struct text *out, double value, const void *style)
+figure_plain (struct text *out, const struct report_style *style, double value)
 {
   const size_t start = out->length;
   figure_write (out, style, value);
@@ -36,6 +36,12 @@ figure_in_formula (struct text *out, double value, const void *style)
   if (out->bytes[out->length - 1] == '.')
     out->length--;
   out->bytes[out->length] = '\0';
+}
+
+void
+figure_in_formula (struct text *out, double value, const void *style)
+{
+  figure_plain (out, style, value);
 }
 
 bool

@@ -113,17 +113,17 @@ close_string (struct text *out, size_t start)
   text_add_char (out, '"');
 }
 
-/* KEY is all that stands before the value, from comma to colon.  */
-static void
-member (struct text *out, const char *key, const char *value)
+void
+json_member (struct text *out, const char *key, const char *value)
 {
   text_add (out, key);
   json_string (out, value != NULL ? value : "");
 }
 
-static void
-number (struct text *out, double value)
+void
+json_figure (struct text *out, const char *key, double value)
 {
+  text_add (out, key);
   if (isfinite (value))
     number_write_exact (out, value);
   else
@@ -133,12 +133,11 @@ number (struct text *out, double value)
 static void
 answer_add (struct text *out, const struct answer *answer)
 {
-  member (out, "{\"what\":", answer->what);
+  json_member (out, "{\"what\":", answer->what);
   if (answer->label != NULL)
-    member (out, ",\"label\":", answer->label);
-  text_add (out, ",\"value\":");
-  number (out, answer->value);
-  member (out, ",\"unit\":", answer->unit);
+    json_member (out, ",\"label\":", answer->label);
+  json_figure (out, ",\"value\":", answer->value);
+  json_member (out, ",\"unit\":", answer->unit);
   text_add (out, ",\"basis\":\"");
   const bool moist = answer->moisture != NULL && *answer->moisture != '\0';
   const bool based = answer->basis != NULL && *answer->basis != '\0';
@@ -153,10 +152,8 @@ answer_add (struct text *out, const struct answer *answer)
     text_add (out, ",\"uncertainty\":");
     number_write_exact (out, answer->uncertainty);
     if (answer->coverage > 1) {
-      text_add (out, ",\"expanded\":");
-      number (out, answer->coverage * answer->uncertainty);
-      text_add (out, ",\"coverage\":");
-      number (out, answer->coverage);
+      json_figure (out, ",\"expanded\":", answer->coverage * answer->uncertainty);
+      json_figure (out, ",\"coverage\":", answer->coverage);
     }
   }
   text_add_char (out, '}');
@@ -188,20 +185,20 @@ cell_add (struct text *out, const struct cell *cell)
   if (cell->text != NULL)
     json_string (out, cell->text);
   else
-    number (out, cell->is_number ? cell->value : (double) NAN);
+    json_figure (out, "", cell->is_number ? cell->value : (double) NAN);
 }
 
 static void
 card_add (struct text *out, const struct card *card)
 {
-  member (out, "{\"title\":", card->title);
-  member (out, ",\"kind\":", card->kind);
+  json_member (out, "{\"title\":", card->title);
+  json_member (out, ",\"kind\":", card->kind);
   text_add (out, ",\"columns\":[");
   for (size_t i = 0; i < card->columns; i++)
-    member (out, i > 0 ? "," : "", card->headings != NULL ? card->headings[i] : NULL);
+    json_member (out, i > 0 ? "," : "", card->headings != NULL ? card->headings[i] : NULL);
   text_add (out, "],\"rows\":[");
   for (const struct card_row *r = card->rows; r != NULL; r = r->next) {
-    member (out, "{\"name\":", r->name);
+    json_member (out, "{\"name\":", r->name);
     text_add (out, ",\"values\":[");
     for (size_t i = 0; i < card->columns; i++) {
       text_add (out, i > 0 ? "," : "");
@@ -234,12 +231,12 @@ cards_add (struct text *out, const struct card *cards)
 static void
 help_page_add (struct text *out, const struct help_page *page)
 {
-  member (out, ",\"help\":{\"title\":", page->title);
+  json_member (out, ",\"help\":{\"title\":", page->title);
   text_add (out, ",\"entries\":[");
   for (const struct help_entry *e = page->entries; e != NULL; e = e->next) {
-    member (out, "{\"say\":", e->say);
-    member (out, ",\"get\":", e->get);
-    member (out, ",\"try\":", e->example);
+    json_member (out, "{\"say\":", e->say);
+    json_member (out, ",\"get\":", e->get);
+    json_member (out, ",\"try\":", e->example);
     text_add (out, e->next != NULL ? "}," : "}");
   }
   text_add (out, "]}");
@@ -250,12 +247,10 @@ readings_add (struct text *out, const char *key, const struct check_reading *rea
 {
   text_add (out, key);
   for (const struct check_reading *r = readings; r != NULL; r = r->next) {
-    member (out, r != readings ? ",{\"reading\":" : "{\"reading\":", r->reading);
-    text_add (out, ",\"value\":");
-    number (out, r->value);
-    member (out, ",\"unit\":", r->unit);
-    text_add (out, ",\"deviation\":");
-    number (out, r->deviation);
+    json_member (out, r != readings ? ",{\"reading\":" : "{\"reading\":", r->reading);
+    json_figure (out, ",\"value\":", r->value);
+    json_member (out, ",\"unit\":", r->unit);
+    json_figure (out, ",\"deviation\":", r->deviation);
     text_add_format (out, ",\"cost\":%d}", r->cost);
   }
   text_add_char (out, ']');
@@ -266,14 +261,11 @@ needs_add (struct text *out, const struct check_need *needs)
 {
   text_add (out, ",\"needed\":[");
   for (const struct check_need *n = needs; n != NULL; n = n->next) {
-    member (out, n != needs ? ",{\"what\":" : "{\"what\":", n->what);
-    text_add (out, ",\"value\":");
-    number (out, n->value);
-    member (out, ",\"unit\":", n->unit);
-    text_add (out, ",\"least\":");
-    number (out, n->least);
-    text_add (out, ",\"greatest\":");
-    number (out, n->greatest);
+    json_member (out, n != needs ? ",{\"what\":" : "{\"what\":", n->what);
+    json_figure (out, ",\"value\":", n->value);
+    json_member (out, ",\"unit\":", n->unit);
+    json_figure (out, ",\"least\":", n->least);
+    json_figure (out, ",\"greatest\":", n->greatest);
     text_add_char (out, '}');
   }
   text_add_char (out, ']');
@@ -284,13 +276,11 @@ figures_add (struct text *out, const struct check_verdict *v)
 {
   text_add_format (out, ",\"agreeing\":%zu,\"figures\":[", v->agreeing);
   for (const struct check_figure *f = v->figures; f != NULL; f = f->next) {
-    member (out, f != v->figures ? ",{\"name\":" : "{\"name\":", f->name);
-    member (out, ",\"stated\":", f->stated);
-    text_add (out, ",\"value\":");
-    number (out, f->computed);
-    member (out, ",\"unit\":", f->unit);
-    text_add (out, ",\"deviation\":");
-    number (out, f->deviation);
+    json_member (out, f != v->figures ? ",{\"name\":" : "{\"name\":", f->name);
+    json_member (out, ",\"stated\":", f->stated);
+    json_figure (out, ",\"value\":", f->computed);
+    json_member (out, ",\"unit\":", f->unit);
+    json_figure (out, ",\"deviation\":", f->deviation);
     text_add_format (out, ",\"agrees\":%s,\"as_written\":%s}", f->holds ? "true" : "false",
                      f->as_written ? "true" : "false");
   }
@@ -302,21 +292,17 @@ check_add (struct text *out, const struct check_verdict *v)
 {
   static const char *const outcomes[] = { "holds", "readings", "unexplained" };
   readings_add (out, ",\"readings\":[", v->readings);
-  member (out, ",\"check\":{\"stated\":", v->stated);
-  member (out, ",\"outcome\":", outcomes[v->outcome]);
+  json_member (out, ",\"check\":{\"stated\":", v->stated);
+  json_member (out, ",\"outcome\":", outcomes[v->outcome]);
   if (v->figures != NULL)
     figures_add (out, v);
   else {
-    text_add (out, ",\"value\":");
-    number (out, v->value);
-    text_add (out, ",\"difference\":");
-    number (out, v->difference);
-    text_add (out, ",\"deviation\":");
-    number (out, v->deviation);
-    text_add (out, ",\"limit\":");
-    number (out, v->limit);
-    member (out, ",\"limit_by\":", v->by_digits ? "digits" : "uncertainty");
-    member (out, ",\"unit\":", v->unit);
+    json_figure (out, ",\"value\":", v->value);
+    json_figure (out, ",\"difference\":", v->difference);
+    json_figure (out, ",\"deviation\":", v->deviation);
+    json_figure (out, ",\"limit\":", v->limit);
+    json_member (out, ",\"limit_by\":", v->by_digits ? "digits" : "uncertainty");
+    json_member (out, ",\"unit\":", v->unit);
   }
   text_add_format (out, ",\"tied\":%zu", v->tied);
   readings_add (out, ",\"ruled_out\":[", v->ruled_out);
@@ -325,23 +311,16 @@ check_add (struct text *out, const struct check_verdict *v)
 }
 
 static void
-figure_member (struct text *out, const char *key, double value)
-{
-  text_add (out, key);
-  number (out, value);
-}
-
-static void
 numbers_add (struct text *out, const char *key, const struct trend_numbers *n)
 {
   text_add_format (out, "%s{\"count\":%zu", key, n->count);
-  figure_member (out, ",\"mean\":", n->mean);
-  figure_member (out, ",\"standard_deviation\":", n->standard_deviation);
-  figure_member (out, ",\"median\":", n->median);
-  figure_member (out, ",\"least\":", n->least);
-  figure_member (out, ",\"greatest\":", n->greatest);
-  member (out, ",\"least_of\":", n->least_of);
-  member (out, ",\"greatest_of\":", n->greatest_of);
+  json_figure (out, ",\"mean\":", n->mean);
+  json_figure (out, ",\"standard_deviation\":", n->standard_deviation);
+  json_figure (out, ",\"median\":", n->median);
+  json_figure (out, ",\"least\":", n->least);
+  json_figure (out, ",\"greatest\":", n->greatest);
+  json_member (out, ",\"least_of\":", n->least_of);
+  json_member (out, ",\"greatest_of\":", n->greatest_of);
   text_add_char (out, '}');
 }
 
@@ -353,7 +332,7 @@ basis_member (struct text *out, const char *moisture, const char *basis)
   text_add (&both, moisture != NULL ? moisture : "");
   text_add (&both, moisture != NULL && basis != NULL ? ", " : "");
   text_add (&both, basis != NULL ? basis : "");
-  member (out, ",\"basis\":", both.bytes);
+  json_member (out, ",\"basis\":", both.bytes);
   text_clear (&both);
 }
 
@@ -361,24 +340,24 @@ static void
 trend_row_add (struct text *out, const struct trend *trend, const struct trend_row *r)
 {
   static const char *const standings[] = { "usual", "straggler", "outlier" };
-  member (out, "{\"name\":", r->name);
-  figure_member (out, ",\"value\":", r->value);
+  json_member (out, "{\"name\":", r->name);
+  json_figure (out, ",\"value\":", r->value);
   if (isfinite (r->uncertainty))
-    figure_member (out, ",\"uncertainty\":", r->uncertainty);
+    json_figure (out, ",\"uncertainty\":", r->uncertainty);
   basis_member (out, r->moisture != NULL ? r->moisture : trend->moisture,
                 r->basis != NULL ? r->basis : trend->basis);
   if (r->why != NULL)
-    member (out, ",\"why\":", r->why);
-  member (out, ",\"standing\":", standings[r->standing]);
+    json_member (out, ",\"why\":", r->why);
+  json_member (out, ",\"standing\":", standings[r->standing]);
   text_add_char (out, '}');
 }
 
 static void
 trend_add (struct text *out, const struct trend *trend)
 {
-  member (out, ",\"trend\":{\"what\":", trend->what);
-  member (out, ",\"over\":", trend->over);
-  member (out, ",\"unit\":", trend->unit);
+  json_member (out, ",\"trend\":{\"what\":", trend->what);
+  json_member (out, ",\"over\":", trend->over);
+  json_member (out, ",\"unit\":", trend->unit);
   text_add (out, ",\"rows\":[");
   for (size_t i = 0; i < trend->count; i++) {
     text_add (out, i > 0 ? "," : "");
@@ -389,10 +368,10 @@ trend_add (struct text *out, const struct trend *trend)
   if (trend->outliers > 0)
     numbers_add (out, ",\"without_outliers\":", &trend->without);
   if (trend->tested) {
-    figure_member (out, ",\"grubbs\":{\"G\":", trend->G);
-    member (out, ",\"of\":", trend->tested_of);
-    figure_member (out, ",\"straggler_above\":", trend->straggler);
-    figure_member (out, ",\"outlier_above\":", trend->outlier);
+    json_figure (out, ",\"grubbs\":{\"G\":", trend->G);
+    json_member (out, ",\"of\":", trend->tested_of);
+    json_figure (out, ",\"straggler_above\":", trend->straggler);
+    json_figure (out, ",\"outlier_above\":", trend->outlier);
     text_add_char (out, '}');
   }
   text_add_char (out, '}');
@@ -403,7 +382,7 @@ report_json (struct text *out, const struct result *result)
 {
   if (result_is_empty (result))
     return;
-  member (out, "{\"statement\":", result->statement);
+  json_member (out, "{\"statement\":", result->statement);
   text_add (out, ",\"answers\":[");
   for (const struct answer *a = result->answers; a != NULL; a = a->next) {
     answer_add (out, a);
@@ -442,13 +421,13 @@ report_fault_json (struct text *out, const struct fault *fault,
     text_add (&words.sentence, "; ");
     text_add (&words.sentence, words.phrase.bytes);
   }
-  member (out, "{\"statement\":", origin->statement);
-  member (out, ",\"error\":{\"kind\":", message_name (fault->kind));
-  member (out, ",\"message\":", words.sentence.bytes);
+  json_member (out, "{\"statement\":", origin->statement);
+  json_member (out, ",\"error\":{\"kind\":", message_name (fault->kind));
+  json_member (out, ",\"message\":", words.sentence.bytes);
   if (origin->file != NULL)
-    member (out, ",\"file\":", origin->file);
+    json_member (out, ",\"file\":", origin->file);
   text_add_format (out, ",\"line\":%d,\"column\":%d", fault->at.line, fault->at.first);
-  member (out, ",\"hint\":", line ? words.line.bytes : words.phrase.bytes);
+  json_member (out, ",\"hint\":", line ? words.line.bytes : words.phrase.bytes);
   text_add (out, "}}\n");
   fault_words_clear (&words);
 }

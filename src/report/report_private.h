@@ -52,7 +52,9 @@ void weight_close (struct text *, const struct report_style *);
 
 /* figure.c: a value to style->digits significant digits, "-" where there is none.  */
 void figure_write (struct text *, const struct report_style *, double value);
-/* The same without end zeros, for a formula; STYLE is a struct report_style.  */
+/* The same without end zeros: in a sentence 5.00000 is 5.  */
+void figure_plain (struct text *, const struct report_style *, double value);
+/* That in a formula; STYLE is a struct report_style.  */
 void figure_in_formula (struct text *, double value, const void *style);
 /* A value to the last digit of its standard uncertainty, which has two; the uncertainty itself
    goes to SPREAD, which may be the same text: then a null byte parts the two.                   */
@@ -81,6 +83,10 @@ void fault_words_clear (struct fault_words *);
 void report_text (struct text *, const struct report_style *, const struct result *);
 void report_json (struct text *, const struct result *);
 void report_csv (struct text *, const struct result *, bool first);
+/* json.c: a member of an object, a text (null: an empty one) or a figure (null where it is not
+   finite).  KEY is all that stands before the value, from comma to colon.                       */
+void json_member (struct text *, const char *key, const char *value);
+void json_figure (struct text *, const char *key, double value);
 /* The verdict on a balance, and its object in JSON.  */
 void report_verdict (struct text *, const struct report_style *, const struct balance_verdict *);
 void report_verdict_json (struct text *, const struct balance_verdict *);

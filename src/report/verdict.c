@@ -8,12 +8,10 @@
 #include "config.h"
 #include "report/report_private.h"
 
-#include <math.h>
 #include <stdio.h>
 #include <string.h>
 
 #include "result/balance_verdict.h"
-#include "support/number.h"
 #include "support/text.h"
 
 enum { NAME_COLUMN = 8, PHRASE_COLUMN = 15, LABEL_COLUMN = NAME_COLUMN + PHRASE_COLUMN };
@@ -139,16 +137,6 @@ report_verdict (struct text *out, const struct report_style *style,
    flows are by mass); what is open, and the z of a figure that nothing checks, is null.         */
 
 static void
-number_add (struct text *out, const char *key, double value)
-{
-  text_add (out, key);
-  if (isfinite (value))
-    number_write_exact (out, value);
-  else
-    text_add (out, "null");
-}
-
-static void
 text_member (struct text *out, const char *key, const char *value)
 {
   text_add (out, key);
@@ -179,7 +167,7 @@ fractions_add (struct text *out, const char *key, const struct balance_verdict *
   for (size_t c = 0; c < v->component_count; c++) {
     text_add (out, c > 0 ? "," : "");
     json_string (out, v->components[c]);
-    number_add (out, ":", values[c]);
+    json_figure (out, ":", values[c]);
   }
   text_add_char (out, '}');
 }
@@ -192,9 +180,9 @@ streams_add (struct text *out, const struct balance_verdict *v)
     const struct verdict_stream *stream = &v->streams[s];
     text_add (out, s > 0 ? "," : "");
     json_string (out, stream->name);
-    number_add (out, ":{\"molar_flow\":", stream->molar_flow);
-    number_add (out, ",\"mass_flow\":", stream->mass_flow);
-    number_add (out, ",\"uncertainty\":", stream->uncertainty);
+    json_figure (out, ":{\"molar_flow\":", stream->molar_flow);
+    json_figure (out, ",\"mass_flow\":", stream->mass_flow);
+    json_figure (out, ",\"uncertainty\":", stream->uncertainty);
     fractions_add (out, ",\"fractions\":", v, stream->fractions);
     fractions_add (out, ",\"fraction_uncertainties\":", v, stream->fractions_u);
     text_add_char (out, '}');
@@ -203,8 +191,8 @@ streams_add (struct text *out, const struct balance_verdict *v)
   for (size_t i = 0; i < v->range_count; i++) {
     text_add (out, i > 0 ? "," : "");
     json_string (out, v->ranges[i].name);
-    number_add (out, ":{\"least\":", v->ranges[i].least);
-    number_add (out, ",\"greatest\":", v->ranges[i].greatest);
+    json_figure (out, ":{\"least\":", v->ranges[i].least);
+    json_figure (out, ",\"greatest\":", v->ranges[i].greatest);
     text_add_char (out, '}');
   }
   text_add_char (out, '}');
@@ -218,7 +206,7 @@ suspects_add (struct text *out, const struct balance_verdict *v)
     const struct verdict_suspect *suspect = &v->suspects[i];
     text_add_format (out, "%s{\"line\":%zu", i > 0 ? "," : "", suspect->line);
     text_member (out, ",\"statement\":", suspect->statement);
-    number_add (out, ",\"needed\":", suspect->needed);
+    json_figure (out, ",\"needed\":", suspect->needed);
     text_member (out, ",\"unit\":", suspect->unit);
     text_add_char (out, '}');
   }
@@ -233,11 +221,11 @@ adjustments_add (struct text *out, const struct balance_verdict *v)
     const struct verdict_adjustment *a = &v->adjustments[i];
     text_member (out, i > 0 ? ",{\"statement\":" : "{\"statement\":", a->statement);
     text_member (out, ",\"component\":", a->component);
-    number_add (out, ",\"stated\":", a->stated);
-    number_add (out, ",\"reconciled\":", a->reconciled);
-    number_add (out, ",\"uncertainty\":", a->uncertainty);
+    json_figure (out, ",\"stated\":", a->stated);
+    json_figure (out, ",\"reconciled\":", a->reconciled);
+    json_figure (out, ",\"uncertainty\":", a->uncertainty);
     text_member (out, ",\"unit\":", a->unit);
-    number_add (out, ",\"z\":", a->z);
+    json_figure (out, ",\"z\":", a->z);
     text_add_char (out, '}');
   }
   text_add_char (out, ']');
@@ -290,7 +278,7 @@ report_verdict_json (struct text *out, const struct balance_verdict *v)
   if (v->gap_around != NULL) {
     text_member (out, ",\"gap\":{\"around\":", v->gap_around);
     text_member (out, ",\"component\":", v->gap_component);
-    number_add (out, ",\"value\":", v->gap);
+    json_figure (out, ",\"value\":", v->gap);
     text_member (out, ",\"unit\":", v->gap_unit);
     text_add_char (out, '}');
   } else {
@@ -301,9 +289,9 @@ report_verdict_json (struct text *out, const struct balance_verdict *v)
   suspects_add (out, v);
   adjustments_add (out, v);
   if (v->tested) {
-    number_add (out, ",\"global_test\":{\"chi2\":", v->chi2);
+    json_figure (out, ",\"global_test\":{\"chi2\":", v->chi2);
     text_add_format (out, ",\"degrees_of_freedom\":%zu", v->freedom);
-    number_add (out, ",\"critical\":", v->critical);
+    json_figure (out, ",\"critical\":", v->critical);
     text_add_format (out, ",\"passed\":%s}", v->passed ? "true" : "false");
   } else {
     text_add (out, ",\"global_test\":null");

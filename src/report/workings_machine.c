@@ -13,7 +13,6 @@
 #include "config.h"
 #include "report/report_private.h"
 
-#include <math.h>
 #include <stdint.h>
 #include <string.h>
 
@@ -23,23 +22,6 @@
 #include "support/number.h"
 #include "support/text.h"
 #include "units/workings.h"
-
-static void
-member (struct text *out, const char *key, const char *value)
-{
-  text_add (out, key);
-  json_string (out, value != NULL ? value : "");
-}
-
-static void
-number (struct text *out, const char *key, double value)
-{
-  text_add (out, key);
-  if (isfinite (value))
-    number_write_exact (out, value);
-  else
-    text_add (out, "null");
-}
 
 static void
 number_exact (struct text *out, double value, const void *with)
@@ -56,7 +38,7 @@ figures_add (struct text *out, const char *key, const struct step *step, size_t 
   struct text figures;
   text_init (&figures);
   formula_figures (&figures, step, term, &exact);
-  member (out, key, figures.length > 0 ? figures.bytes : "");
+  json_member (out, key, figures.length > 0 ? figures.bytes : "");
   text_clear (&figures);
 }
 
@@ -66,18 +48,18 @@ symbols_add (struct text *out, const struct step *step)
   text_add (out, ",\"symbols\":[");
   for (size_t i = 0; i < step->symbol_count; i++) {
     const struct step_symbol *s = &step->symbols[i];
-    member (out, i > 0 ? ",{\"symbol\":" : "{\"symbol\":", s->name);
-    number (out, ",\"value\":", s->value);
-    member (out, ",\"unit\":", s->unit);
-    member (out, ",\"source\":", s->source);
+    json_member (out, i > 0 ? ",{\"symbol\":" : "{\"symbol\":", s->name);
+    json_figure (out, ",\"value\":", s->value);
+    json_member (out, ",\"unit\":", s->unit);
+    json_member (out, ",\"source\":", s->source);
     text_add_char (out, '}');
   }
   text_add (out, "],\"columns\":[");
   for (size_t i = 0; i < step->column_count; i++) {
     const struct step_column *c = &step->columns[i];
-    member (out, i > 0 ? ",{\"symbol\":" : "{\"symbol\":", c->name);
-    member (out, ",\"unit\":", c->unit);
-    member (out, ",\"source\":", c->source);
+    json_member (out, i > 0 ? ",{\"symbol\":" : "{\"symbol\":", c->name);
+    json_member (out, ",\"unit\":", c->unit);
+    json_member (out, ",\"source\":", c->source);
     text_add_char (out, '}');
   }
   text_add_char (out, ']');
@@ -89,14 +71,14 @@ terms_add (struct text *out, const struct step *step)
   const bool each = formula_is_for_terms (step);
   text_add (out, ",\"terms\":[");
   for (size_t t = 0; t < step->term_count; t++) {
-    member (out, t > 0 ? ",{\"of\":" : "{\"of\":", step->terms[t]);
+    json_member (out, t > 0 ? ",{\"of\":" : "{\"of\":", step->terms[t]);
     if (each)
       figures_add (out, ",\"figures\":", step, t);
     text_add (out, ",\"values\":{");
     for (size_t i = 0; i < step->column_count; i++) {
       text_add (out, i > 0 ? "," : "");
       json_string (out, step->columns[i].name);
-      number (out, ":", step->columns[i].at[t]);
+      json_figure (out, ":", step->columns[i].at[t]);
     }
     text_add (out, "}}");
   }
@@ -109,19 +91,19 @@ step_add (struct text *out, const struct step *step)
   struct text name;
   text_init (&name);
   step_name (&name, step);
-  member (out, "{\"step\":", name.bytes);
+  json_member (out, "{\"step\":", name.bytes);
   text_clear (&name);
-  member (out, ",\"formula\":", step->formula);
-  number (out, ",\"value\":", step->value);
-  member (out, ",\"unit\":", step->unit);
-  member (out, ",\"source\":", step->source);
+  json_member (out, ",\"formula\":", step->formula);
+  json_figure (out, ",\"value\":", step->value);
+  json_member (out, ",\"unit\":", step->unit);
+  json_member (out, ",\"source\":", step->source);
   text_add (out, ",\"share\":null");
   if (formula_is_for_terms (step))
-    member (out, ",\"figures\":", "");
+    json_member (out, ",\"figures\":", "");
   else
     figures_add (out, ",\"figures\":", step, SIZE_MAX);
   if (step->solved != NULL)
-    member (out, ",\"solved\":", step->solved);
+    json_member (out, ",\"solved\":", step->solved);
   symbols_add (out, step);
   terms_add (out, step);
   text_add_char (out, '}');
@@ -139,14 +121,14 @@ input_add (struct text *out, const struct answer *answer, const struct budget_li
   number_write_exact (&figures, b->sensitivity);
   text_add (&figures, " * ");
   number_write_exact (&figures, b->u);
-  member (out, ",{\"step\":", what.bytes);
-  member (out, ",\"formula\":", "u_i = s_i u(x_i)");
-  number (out, ",\"value\":", b->contribution);
-  member (out, ",\"unit\":", answer->unit);
-  member (out, ",\"source\":", STEP_TYPED);
-  number (out, ",\"share\":", b->share);
-  member (out, ",\"figures\":", figures.bytes);
-  member (out, ",\"answer\":", answer->label != NULL ? answer->label : answer->what);
+  json_member (out, ",{\"step\":", what.bytes);
+  json_member (out, ",\"formula\":", "u_i = s_i u(x_i)");
+  json_figure (out, ",\"value\":", b->contribution);
+  json_member (out, ",\"unit\":", answer->unit);
+  json_member (out, ",\"source\":", STEP_TYPED);
+  json_figure (out, ",\"share\":", b->share);
+  json_member (out, ",\"figures\":", figures.bytes);
+  json_member (out, ",\"answer\":", answer->label != NULL ? answer->label : answer->what);
   text_add_char (out, '}');
   text_clear (&what);
   text_clear (&figures);
@@ -168,7 +150,7 @@ report_workings_json (struct text *out, const struct workings_record *record)
   text_add (out, "],\"sources\":{");
   for (const struct workings_source *s = record->sources; s != NULL; s = s->next) {
     json_string (out, s->name);
-    member (out, ":", s->text);
+    json_member (out, ":", s->text);
     text_add (out, s->next != NULL ? "," : "");
   }
   text_add_char (out, '}');
