@@ -29,6 +29,19 @@ static const double P_LOWEST = 90e3, P_HIGHEST = 110e3, Z_LOWEST = 0.9, TRACE = 
 
 enum { SUM_G, SUM_W, SUM_M, SUM_S, SUMS };
 
+bool
+calorific_is_net (int figure)
+{
+  return figure == CALORIFIC_NET_MOLAR || figure == CALORIFIC_NET_MASS
+         || figure == CALORIFIC_NET_VOLUME || figure == CALORIFIC_NET_WOBBE;
+}
+
+bool
+calorific_is_wobbe (int figure)
+{
+  return figure == CALORIFIC_WOBBE || figure == CALORIFIC_NET_WOBBE;
+}
+
 /* The question with its places in the tables.  */
 struct frame {
   const struct calorific_tables *tables;

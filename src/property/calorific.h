@@ -98,6 +98,9 @@ bool calorific_compute (const struct calorific_tables *, const struct compositio
                         const struct calorific_question *, struct calorific *,
                         struct fault *) MUST_CHECK;
 
+/* Of an enum calorific_figure: is water taken as vapour, is it a Wobbe index?  */
+bool calorific_is_net (int figure);
+bool calorific_is_wobbe (int figure);
 /* Where the value of SPECIES is from; CALORIFIC_TRACE where there is none.  */
 enum calorific_origin calorific_origin (const struct calorific_tables *, enum calorific_edition,
                                         const struct species *);

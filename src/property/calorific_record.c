@@ -22,29 +22,18 @@ struct account {
 };
 
 static bool
-is_net (int figure)
-{
-  return figure == CALORIFIC_NET_MOLAR || figure == CALORIFIC_NET_MASS
-         || figure == CALORIFIC_NET_VOLUME || figure == CALORIFIC_NET_WOBBE;
-}
-
-static bool
-is_wobbe (int figure)
-{
-  return figure == CALORIFIC_WOBBE || figure == CALORIFIC_NET_WOBBE;
-}
-
-static bool
 is_heat (int figure)
 {
   return figure == CALORIFIC_GROSS_MOLAR || figure == CALORIFIC_GROSS_MASS
-         || figure == CALORIFIC_GROSS_VOLUME || figure == CALORIFIC_WOBBE || is_net (figure);
+         || figure == CALORIFIC_GROSS_VOLUME || figure == CALORIFIC_WOBBE
+         || calorific_is_net (figure);
 }
 
 static bool
 is_by_volume (int figure)
 {
-  return figure == CALORIFIC_GROSS_VOLUME || figure == CALORIFIC_NET_VOLUME || is_wobbe (figure)
+  return figure == CALORIFIC_GROSS_VOLUME || figure == CALORIFIC_NET_VOLUME
+         || calorific_is_wobbe (figure)
          || figure == CALORIFIC_DENSITY || figure == CALORIFIC_MOLAR_VOLUME;
 }
 
@@ -85,7 +74,7 @@ record_heat (struct account *a)
       .unit = "J/mol", .source = a->standard, .term_count = (unsigned) n, .terms = a->terms,
       STEP_COLUMNS ({ "x_i", a->gas->fraction, "mol/mol", NULL, NULL },
                     { "H_i", H, "J/mol", NULL, a->sources }) });
-  if (!is_net (a->ask->wanted))
+  if (!calorific_is_net (a->ask->wanted))
     return;
   workings_add (a->workings, &(struct step) {
       .name = "atoms of hydrogen in what burns", .formula = "W = sum(x_i b_i)",
@@ -239,7 +228,7 @@ calorific_record (const struct calorific_tables *tables, const struct compositio
   if (is_heat (wanted))
     record_heat (&a);
   const bool mass = wanted == CALORIFIC_GROSS_MASS || wanted == CALORIFIC_NET_MASS;
-  const bool relative = is_wobbe (wanted) || wanted == CALORIFIC_RELATIVE_DENSITY;
+  const bool relative = calorific_is_wobbe (wanted) || wanted == CALORIFIC_RELATIVE_DENSITY;
   if (mass || relative || wanted == CALORIFIC_DENSITY || wanted == CALORIFIC_MOLAR_MASS)
     record_molar_mass (&a);
   if (ask->real && (relative || is_by_volume (wanted) || wanted == CALORIFIC_Z))

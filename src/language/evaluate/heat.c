@@ -187,26 +187,13 @@ heat_per_mole (struct evaluation *ev, const struct composition *gas, bool net, d
   return true;
 }
 
-static bool
-is_net (int figure)
-{
-  return figure == CALORIFIC_NET_MOLAR || figure == CALORIFIC_NET_MASS
-         || figure == CALORIFIC_NET_VOLUME || figure == CALORIFIC_NET_WOBBE;
-}
-
-static bool
-is_wobbe (int figure)
-{
-  return figure == CALORIFIC_WOBBE || figure == CALORIFIC_NET_WOBBE;
-}
-
 /* From the molar calorific value to what is asked.  */
 static void
 record_ideal (struct evaluation *ev, const struct heat_question *q, int figure, double H,
               double value)
 {
   const bool mass = figure == CALORIFIC_GROSS_MASS || figure == CALORIFIC_NET_MASS;
-  const bool wobbe = is_wobbe (figure);
+  const bool wobbe = calorific_is_wobbe (figure);
   const double M = q->gas->molar_mass, Vm = GAS_CONSTANT * q->T / q->p;
   if (!ev->workings || figure == CALORIFIC_GROSS_MOLAR || figure == CALORIFIC_NET_MOLAR) {
     return;
@@ -235,14 +222,14 @@ static bool
 ideal_figure (struct evaluation *ev, const struct heat_question *q, int figure, double *value)
 {
   double H, Vm = GAS_CONSTANT * q->T / q->p, M = constants_molar_mass (ev, q->gas);
-  if (!heat_tables (ev) || !heat_per_mole (ev, q->gas, is_net (figure), &H)) {
+  if (!heat_tables (ev) || !heat_per_mole (ev, q->gas, calorific_is_net (figure), &H)) {
     return false;
   }
   if (figure == CALORIFIC_GROSS_MOLAR || figure == CALORIFIC_NET_MOLAR) {
     *value = H;
   } else if (figure == CALORIFIC_GROSS_MASS || figure == CALORIFIC_NET_MASS) {
     *value = H / M;
-  } else if (is_wobbe (figure)) {
+  } else if (calorific_is_wobbe (figure)) {
     *value = H / Vm / sqrt (M / heat_air_molar_mass (ev));
   } else {
     *value = H / Vm;
@@ -264,7 +251,8 @@ static const char *
 standard_text (struct evaluation *ev, const struct heat_question *q, int figure)
 {
   const char *name = calorific_edition_name (edition_of (ev, q->by));
-  bool volume = is_wobbe (figure) || is_by_volume (figure) || figure == CALORIFIC_GROSS_VOLUME
+  bool volume = calorific_is_wobbe (figure) || is_by_volume (figure)
+                || figure == CALORIFIC_GROSS_VOLUME
                 || figure == CALORIFIC_NET_VOLUME;
   return !q->by ? name
          : arena_format (ev->arena, "%s, its molar masses%s", name, volume ? " and R" : "");
@@ -273,13 +261,13 @@ standard_text (struct evaluation *ev, const struct heat_question *q, int figure)
 static const char *
 basis_text (struct evaluation *ev, const struct heat_question *q, int figure)
 {
-  bool volume = is_wobbe (figure) || figure == CALORIFIC_GROSS_VOLUME
+  bool volume = calorific_is_wobbe (figure) || figure == CALORIFIC_GROSS_VOLUME
                 || figure == CALORIFIC_NET_VOLUME;
   struct burnt parts;
   bool stated = !q->by && !is_by_volume (figure)
-                && split_stated (ev, q->gas, is_net (figure), &parts) && !parts.known;
+                && split_stated (ev, q->gas, calorific_is_net (figure), &parts) && !parts.known;
   const char *name = stated ? "as stated" : standard_text (ev, q, figure);
-  const char *sort = is_net (figure) ? "net" : "gross";
+  const char *sort = calorific_is_net (figure) ? "net" : "gross";
   const char *burnt = temperature_text (ev->arena, ev->settings->combustion, false);
   if (figure == CALORIFIC_MOLAR_MASS) {
     return name;
