@@ -19,6 +19,7 @@ enum {
      anything is left decides, which one more digit tells.                                      */
   MOST_READ = 770,
   EXPONENT_BOUND = 100000000,             /* beyond any double, far from overflow */
+  TYPED_EXPONENT = 400,                   /* beyond any double: no need to count on */
   WHOLE_ROOM = 24,                        /* digits of a long, and a null byte */
   EXACT_DIGITS = 15,                      /* 10^15 < 2^53 */
   EXACT_POWER = 22                        /* 10^22 is a double */
@@ -184,6 +185,28 @@ number_read (const char *bytes, size_t n, double *value, bool *too_large)
   }
   *value = read;
   return true;
+}
+
+struct number_digits
+number_digits (const char *figure)
+{
+  struct number_digits digits = { 0, 0, false };
+  const char *s = figure;
+  int exponent = 0;
+
+  for (; *s && *s != 'e' && *s != 'E'; s++) {
+    digits.point = digits.point || *s == '.';
+    digits.place -= digits.point && is_digit (*s);
+    digits.end_zeros = *s == '0' ? digits.end_zeros + 1 : *s == '_' ? digits.end_zeros : 0;
+  }
+  if (*s) {
+    const bool minus = *++s == '-';
+
+    for (s += strspn (s, "+-"); is_digit (*s); s++)
+      exponent = exponent < TYPED_EXPONENT ? 10 * exponent + (*s - '0') : exponent;
+    digits.place += minus ? -exponent : exponent;
+  }
+  return digits;
 }
 
 /* Writing.  */

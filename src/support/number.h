@@ -14,6 +14,11 @@ struct text;
    smaller than the smallest reads as 0.                                                       */
 bool number_read (const char *bytes, size_t n, double *value, bool *too_large) MUST_CHECK;
 
+/* How a number is typed: the power of ten its last digit counts, how many zeros it ends in before
+   any exponent ('_' passed over), and whether it has a point.  FIGURE is one number_read reads.  */
+struct number_digits { int place, end_zeros; bool point; };
+struct number_digits number_digits (const char *figure);
+
 /* Appends VALUE in the shortest form of %.15g, %.16g, %.17g that reads back equal.  */
 void number_write_exact (struct text *, double value);
 

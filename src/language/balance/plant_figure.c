@@ -10,6 +10,7 @@
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
+#include "support/number.h"
 #include "units/constants.h"
 
 /* Whole numbers are typed as exact ones are (100 kmol/h, a share of 10 %): their digits say little
@@ -19,24 +20,13 @@ static const double whole_most = 0.005;
 double
 digits_rounding (const struct node *figure)
 {
-  const char *text = figure && figure->figure ? figure->figure : "";
-  size_t n = strcspn (text, "eE");
-  const char *point = memchr (text, '.', n);
-  double unit = 1;
-  if (point) {
-    for (const char *c = point + 1; c < text + n; c++) {
-      unit *= *c >= '0' && *c <= '9' ? 0.1 : 1;
-    }
+  if (!figure || !figure->figure || !*figure->figure) {
+    return 0;
   }
-  const char *exponent = text[n] ? text + n + 1 : "0";
-  int power = 0;
-  bool minus = *exponent == '-';
-  for (const char *c = exponent + strspn (exponent, "+-"); *c >= '0' && *c <= '9'; c++) {
-    power = power < 400 ? 10 * power + (*c - '0') : power;
-  }
-  double half = *text ? 0.5 * unit * pow (10, minus ? -power : power) : 0;
-  double cap = whole_most * fabs (figure ? figure->number : 0);
-  return !point && cap > 0 ? fmin (half, cap) : half;
+  struct number_digits digits = number_digits (figure->figure);
+  double half = 0.5 * pow (10, digits.place);
+  double cap = whole_most * fabs (figure->number);
+  return !digits.point && cap > 0 ? fmin (half, cap) : half;
 }
 
 /* The gas a volume is one of, as far as it is known.  */

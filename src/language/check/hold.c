@@ -7,6 +7,7 @@
 #include "language/evaluate/wording.h"
 #include "result/result.h"
 #include "support/arena.h"
+#include "support/number.h"
 
 /* ---- The claim ---- */
 
@@ -16,24 +17,10 @@ static double
 rounding (const struct node *claim)
 {
   static const double most = 0.005;
-  int places = 0, zeros = 0, exponent = 0;
-  bool point = false;
-  for (const char *s = claim->figure; s && *s; s++) {
-    if (*s == 'e' || *s == 'E') {
-      int sign = s[1] == '-' ? -1 : 1;
-      for (s += 1 + (s[1] == '-' || s[1] == '+'); *s >= '0' && *s <= '9' && exponent < 400; s++) {
-        exponent = 10 * exponent + (*s - '0');
-      }
-      exponent *= sign;
-      break;
-    }
-    point = point || *s == '.';
-    places += point && *s >= '0' && *s <= '9';
-    zeros = *s == '0' ? zeros + 1 : *s == '_' ? zeros : 0;
-  }
+  struct number_digits digits = number_digits (claim->figure ? claim->figure : "");
   double cap = most * fabs (claim->number);
-  int place = point ? -places : cap > 0 ? zeros : 0;
-  double half = 0.5 * pow (10, place + exponent);
+  int zeros = !digits.point && cap > 0 ? digits.end_zeros : 0;
+  double half = 0.5 * pow (10, digits.place + zeros);
   return cap > 0 && cap < half ? cap : half;
 }
 

@@ -356,6 +356,28 @@ the_same_in_every_locale (void)
   setlocale (LC_NUMERIC, "C");
 }
 
+static void
+how_it_is_typed (void)
+{
+  static const struct { const char *typed; int place, end_zeros; bool point; } rows[] = {
+    { "850", 0, 1, false }, { "2_200", 0, 2, false }, { "1_000_000", 0, 6, false },
+    { "1057", 0, 0, false }, { "58.20", -2, 1, true }, { "58.", 0, 0, true },
+    { ".5", -1, 0, true }, { "1.5e3", 2, 0, true }, { "15e3", 3, 0, false },
+    { "10E-2", -2, 1, false }, { "1.20e+2", 0, 1, true }, { "0", 0, 1, false }, { "", 0, 0, false }
+  };
+  for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+    const struct number_digits digits = number_digits (rows[i].typed);
+
+    if (digits.place != rows[i].place || digits.end_zeros != rows[i].end_zeros
+        || digits.point != rows[i].point)
+      printf ("# %s: %d, %d, %d\n", rows[i].typed, digits.place, digits.end_zeros, digits.point);
+    CHECK (digits.place == rows[i].place);
+    CHECK (digits.end_zeros == rows[i].end_zeros);
+    CHECK (digits.point == rows[i].point);
+  }
+  CHECK (number_digits ("1e99999999999").place > 308);
+}
+
 static const struct test_case cases[] = {
   { "good numbers", good_numbers },
   { "what is no number", what_is_no_number },
@@ -369,6 +391,7 @@ static const struct test_case cases[] = {
   { "rounds as printf", rounds_as_printf },
   { "exact as printf, and back", exact_as_printf_and_back },
   { "exact figures", exact_figures },
+  { "how it is typed", how_it_is_typed },
   { "the same in every locale", the_same_in_every_locale },
   { NULL, NULL }
 };
