@@ -210,3 +210,54 @@ absence_spread (struct arena *arena, const struct network *network, const bool t
   }
   return absence;
 }
+
+/* Are the columns of a form absent, or without a coefficient?  *SAID: one of them is by fact F.  */
+static bool
+is_gone (const struct absence *absence, const struct form *form, size_t f, const double have[],
+         bool *said)
+{
+  bool gone = true;
+  for (size_t i = 0; i < form->count; i++) {
+    size_t column = form->terms[i].column;
+    *said = *said || (absence->absent[column] && absence->cause[column] == f);
+    gone = gone && (absence->absent[column] || !(fabs (have[column]) > 0));
+  }
+  return gone;
+}
+
+static void
+clear (const struct form *form, double have[])
+{
+  for (size_t i = 0; i < form->count; i++) {
+    have[form->terms[i].column] = 0;
+  }
+}
+
+bool
+absence_is_all (const struct network *network, const struct absence *absence, size_t f,
+                double have[])
+{
+  const struct fact *fact = &network->fact[f];
+  bool said = false, gone = true;
+  size_t first = fact->stream * network->components;
+  switch (fact->kind) {
+  case FACT_FORM:
+  case FACT_RATIO:
+    gather (&fact->left, 1, have);
+    gather (&fact->right, fact->kind == FACT_RATIO ? -fact->value : 0, have);
+    gone = is_gone (absence, &fact->left, f, have, &said);
+    gone = is_gone (absence, &fact->right, f, have, &said) && gone;
+    clear (&fact->left, have);
+    clear (&fact->right, have);
+    return gone && said;
+  case FACT_SHARE:
+    for (size_t c = 0; c < network->components; c++) {
+      said = said || (absence->absent[first + c] && absence->cause[first + c] == f);
+      gone = gone && absence->absent[first + c];
+    }
+    return gone && said && !(fact->value > 0);
+  case FACT_COMPOSITION:
+    return false;                       /* its rows are those of what is there */
+  }
+  return false;
+}

@@ -10,6 +10,7 @@
 
 #include <stdbool.h>
 #include "balance/network.h"
+#include "support/check.h"
 
 struct arena;
 
@@ -19,5 +20,11 @@ struct arena;
    says which facts count.                                                                       */
 struct absence { bool *absent; size_t *cause; };
 struct absence absence_spread (struct arena *, const struct network *, const bool take[]);
+
+/* Is all that fact F says that something is not there, which nothing else said?  Then its columns
+   are gone, and a row of it would be 0 = 0, as if the others implied it.  HAVE is room for a number
+   for each column, all zero before and after.                                                   */
+bool absence_is_all (const struct network *, const struct absence *, size_t f,
+                     double have[]) MUST_CHECK;
 
 #endif

@@ -17,9 +17,21 @@
 /* A fact whose row in the left null space is less than this is checked by nothing.  */
 static const double unchecked = 1e-8;
 
+/* Outlets of a split that carry nothing have no composition to be equal.  */
+static size_t
+full_outlets (const struct system *system, const struct boundary *boundary)
+{
+  size_t full = 0;
+  for (size_t o = 0; o < boundary->outlet_count; o++) {
+    full += system_parts (system, boundary->outlets[o]) > 0 ? 1 : 0;
+  }
+  return full;
+}
+
 static struct count
 count_up (const struct core *core)
 {
+  double *have = ARENA_ARRAY (core->arena, core->system->columns + 1, double);
   const struct network *network = core->network;
   const struct system *system = core->system;
   struct count count = { .variables = system->present, .missing = core->freedom,
@@ -31,12 +43,16 @@ count_up (const struct core *core)
     const struct boundary *boundary = &network->boundary[b];
     if (boundary->kind == BOUNDARY_SPLIT && boundary->outlet_count > 0) {
       size_t parts = system_parts (system, boundary->inlets[0]);
-      count.relations += parts > 0 ? (boundary->outlet_count - 1) * (parts - 1) : 0;
+      size_t outlets = full_outlets (system, boundary);
+      count.relations += parts > 0 && outlets > 0 ? (outlets - 1) * (parts - 1) : 0;
     }
   }
   for (size_t f = 0; f < network->facts; f++) {
     const struct fact *fact = &network->fact[f];
     size_t parts = fact->kind == FACT_COMPOSITION ? system_parts (system, fact->stream) : 2;
+    if (system->take[f] && absence_is_all (network, &system->absence, f, have)) {
+      continue;                         /* its variables are not counted either */
+    }
     if (fact->relation) {
       count.relations++;
     } else {

@@ -396,6 +396,7 @@ system_make (struct arena *arena, const struct network *network, const bool take
   struct system *system = ARENA_NEW (arena, struct system);
   struct making making = { .arena = arena, .system = system };
   size_t outlets = 0, extent = network_extent (network, 0);
+  double *have = ARENA_ARRAY (arena, network_columns (network) + 1, double);
   *system = (struct system) { .network = network, .take = take, .split = split,
                               .columns = network_columns (network),
                               .absence = absence_spread (arena, network, take) };
@@ -417,7 +418,7 @@ system_make (struct arena *arena, const struct network *network, const bool take
   }
   system->structure = making.builder.rows.count;
   for (size_t f = 0; f < network->facts; f++) {
-    if (take[f]) {
+    if (take[f] && !absence_is_all (network, &system->absence, f, have)) {
       fact_rows (&making, f);
     }
   }

@@ -229,9 +229,43 @@ def cautions(tap):
              else objects[0]["cautions"] or ["no caution"], "a balance warns of what it mixes")
 
 
+def nothing_there(tap):
+    """A line that says nothing is there takes its unknowns away: without it they would be open, so
+    the others do not imply it, and nothing is to spare."""
+    three = ("mix unit: a + b + c = d", "known a = 60 kmol/h of CH4", "known composition of b = CO2",
+             "known composition of c = CO2", "known CH4 of d = 60 mol%")
+    cases = (
+        ("an inlet", three + ("known c = 0 kmol/h",)),
+        ("an outlet of a split", ("split unit: a = b + c", "known a = 9 kmol/h of digester",
+                                  "known b = 0 kmol/h")),
+        ("a share of a split", ("split unit: a = b + c", "known a = 9 kmol/h of digester",
+                                "known b = 0 % of a")),
+        ("a part", ("separate unit: a = b + c", "known a = 9 kmol/h of digester",
+                    "known CO2 of b = 0 mol%", "known CH4 of c = 10 mol%")),
+        ("all other parts", ("separate unit: a = b + c", "known a = 9 kmol/h of digester",
+                             "known CH4 of b = 100 mol%", "known CH4 of c = 10 mol%")),
+    )
+    for name, lines in cases:
+        balance = session.answers(DIGESTER + block(*lines))[-1]["balance"]
+        adds = balance["balances"] + balance["relations"] + balance["knowns"]
+        tap.tell([] if balance["status"] == "determined" and balance["surplus"] == 0
+                 and adds == balance["independent"] == balance["variables"]
+                 and not balance["redundant"] else [str(balance)], "%s is nothing" % name)
+    balance = session.answers(block(*three))[-1]["balance"]
+    tap.tell([] if balance["degrees_of_freedom"] == 1 else [str(balance)],
+             "an inlet that nobody says is nothing is open")
+    balance = session.answers(DIGESTER + block(
+        "mix unit: a + b = c", "known a = 9 kmol/h of digester", "known b = 0 kmol/h",
+        "known c = 12 kmol/h"))[-1]["balance"]
+    needed = {one["statement"]: one["needed"] for one in balance["suspects"]}
+    tap.tell(session.off(needed.get("known b = 0 kmol/h", math.nan), 3, 1e-9),
+             "what is said to be nothing is a suspect all the same")
+
+
 def main():
     tap = session.Tap()
     forms(tap)
+    nothing_there(tap)
     live(tap)
     digits(tap)
     kept(tap)
