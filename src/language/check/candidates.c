@@ -307,7 +307,7 @@ add_own_state (struct gathering *g)
     struct candidate *c = add (g);
     c->sides = 1u << SIDE_STATED;
     c->own = c->fills = true;
-    c->cost = 1;
+    c->cost = isnan (g->check->base[SIDE_STATED].settings.family[FAMILY_NONE].at.T) ? 0 : 1;
     c->said = arena_format (g->check->work, "%s at the state of what it is of",
                             g->check->stated);
   }

@@ -77,6 +77,7 @@ make_target (struct check *check, const struct statement *s, const struct node *
   }
   if (said) {
     check->target = *said;
+    check->actual = said->unit->actual;
   }
   check->target.unit = quantity->unit;
   check->target.unit_text = quantity->unit ? quantity->unit_text : "";
@@ -120,7 +121,7 @@ is_bare_volume (const struct check *check)
   }
   struct measure m = measure_of_unit (u);
   bool flow, part = check->value.kind == VALUE_PART || check->value.kind == VALUE_TRACE;
-  return u->family_power == 0 && !u->actual && !check->target.state
+  return u->family_power == 0 && !u->actual && !check->actual && !check->target.state
          && ((flow_basis_of (&m, &flow) == FLOW_ACTUAL && check->value.kind == VALUE_STREAM)
              || (part && u->dimension.length == -3));
 }
@@ -171,8 +172,17 @@ work_out (struct check *check, int side)
   return done;
 }
 
-/* A bare volume of something that has a state: whichever of that and the usual conditions comes
-   nearer to the claim.                                                                          */
+/* Is the claim so near the figure at its own state that this must be meant?  No barometer, humidity
+   or temperature left out makes a factor of two; another state does.                            */
+static bool
+is_near (double own, double claim)
+{
+  static const double most = 2;
+  return own * claim > 0 && fabs (claim) <= most * fabs (own) && fabs (own) <= most * fabs (claim);
+}
+
+/* A bare volume of something that has a state: at that, as any question has it, or at the usual
+   conditions where the claim is far from the one and nearer to the other.                       */
 static void
 choose_state (struct check *check)
 {
@@ -184,7 +194,7 @@ choose_state (struct check *check)
   fill (check, SIDE_STATED);
   bool filled = look (check, SIDE_STATED, &fault);
   check->open[SIDE_STATED] = filled;
-  if (!filled || fabs (own - claim) <= fabs (check->figure - claim)) {
+  if (!filled || is_near (own, claim) || fabs (own - claim) <= fabs (check->figure - claim)) {
     leave_own (check);
     check->open[SIDE_STATED] = filled && look (check, SIDE_STATED, &fault);
     check->figure = own;

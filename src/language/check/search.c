@@ -213,7 +213,7 @@ search_readings (struct check *check, const struct candidate *c, size_t n,
   for (size_t i = 0; i < n; i++)
     if ((!open || c[i].fills) && check_fits (check, c[i].figure)) {
       add_reading (v, reading_of (check, c[i].said, c[i].figure, c[i].unit), c[i].cost);
-      usual = usual || !open || c[i].cost == 1;
+      usual = usual || !open || c[i].cost <= 1;
     }
   bool holds = check_fits (check, check->figure) && !open;
   if (!usual && !holds && !search_pairs (check, c, n, v, fault)) {

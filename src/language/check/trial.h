@@ -47,6 +47,7 @@ struct check {
   const char *stated, *name;                /* as typed; on a sheet: its name */
   double number, limit;                     /* of the claim, in its unit */
   bool by_digits, open[SIDES];              /* open: a volume without its state */
+  bool actual;                              /* asked for in a unit of its own state: acfm */
   struct side base[SIDES];
   unsigned touched[SIDES];
   struct value value;                       /* the computed side as typed */
