@@ -3,8 +3,10 @@
 
 #include <errno.h>
 #include <fcntl.h>
+#include <limits.h>
 #include <poll.h>
 #include <string.h>
+#include <sys/stat.h>
 #include <sys/types.h>
 #include <unistd.h>
 
@@ -24,29 +26,38 @@ descriptor_fill_standard (void)
   }
 }
 
-/* After a write that moved nothing: may it be tried again?  */
-static bool
-may_try_again (int fd)
+/* How many of N bytes FD takes without waiting in the write itself, where a signal that came just
+   before would be waited past: all, or once a pipe has room, as many as surely fit.  None: a
+   signal has come first.                                                                       */
+static size_t
+taken_at_once (int fd, bool may_wait, size_t n)
 {
-  if (errno == EINTR)
-    return !interrupt_pending ();
-  if (errno == EAGAIN) {
-    struct pollfd wait = { .fd = fd, .events = POLLOUT };
-    return poll (&wait, 1, -1) == 1 || (errno == EINTR && !interrupt_pending ());
-  }
-  return false;
+  if (!may_wait)
+    return n;
+  if (!interrupt_wait (fd, POLLOUT))
+    return 0;
+  return n < PIPE_BUF ? n : PIPE_BUF;
 }
 
 bool
 descriptor_write (int fd, const char *bytes, size_t n)
 {
-  while (n > 0) {
-    ssize_t written = write (fd, bytes, n);
+  struct stat about;
+  const bool may_wait = fstat (fd, &about) == 0 && !S_ISREG (about.st_mode);
 
+  while (n > 0) {
+    const size_t part = taken_at_once (fd, may_wait, n);
+    ssize_t written;
+
+    if (part == 0) {
+      errno = EINTR;
+      return false;
+    }
+    written = write (fd, bytes, part);
     if (written > 0) {
       bytes += written;
       n -= (size_t) written;
-    } else if (written == 0 || !may_try_again (fd)) {
+    } else if (written == 0 || (errno != EAGAIN && (errno != EINTR || interrupt_pending ()))) {
       return false;
     }
   }

@@ -5,6 +5,7 @@
 #include <poll.h>
 #include <signal.h>
 #include <stddef.h>
+#include <time.h>
 
 /* Written by the handler: the signal that came, and whether a second one shall be the last.  */
 static volatile sig_atomic_t caught;
@@ -60,21 +61,23 @@ interrupt_pending (void)
 }
 
 bool
-interrupt_wait (int fd)
+interrupt_wait (int fd, short events)
 {
-  struct pollfd input = { .fd = fd, .events = POLLIN };
+  static const struct timespec at_once = { 0 };
+  struct pollfd asked = { .fd = fd, .events = events };
   sigset_t held, before;
-  bool readable = false;
+  int ready;
 
   sigemptyset (&held);
   sigaddset (&held, SIGINT);
   sigaddset (&held, SIGTERM);
   sigaddset (&held, SIGHUP);
   sigprocmask (SIG_BLOCK, &held, &before);
-  while (caught == 0 && !readable)
-    readable = ppoll (&input, 1, NULL, &before) != -1 || errno != EINTR;
+  do
+    ready = ppoll (&asked, 1, caught == 0 ? NULL : &at_once, &before);
+  while (ready == -1 && errno == EINTR);
   sigprocmask (SIG_SETMASK, &before, NULL);
-  return caught == 0;
+  return ready != 0;
 }
 
 void

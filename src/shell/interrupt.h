@@ -14,9 +14,9 @@ void interrupt_catch (bool at_prompt);
 
 /* Has a signal asked to stop?  */
 bool interrupt_pending (void);
-/* Waits until FD can be read; false if a signal has come, even one just before: those are let in
-   only while it waits, so that none is lost between the look and the wait.                      */
-bool interrupt_wait (int fd);
+/* Waits until FD is ready for EVENTS (of poll) or a signal has come, be it just before: those are
+   let in only while it waits, so that none is lost between the look and the wait.  Is FD ready?  */
+bool interrupt_wait (int fd, short events);
 void interrupt_forget (void);
 
 /* Raises the signal that came again, with its usual effect; returns if none came.  */

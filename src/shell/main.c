@@ -146,11 +146,11 @@ run (const struct options *options)
     complain_about_file (options->output, "is not written", "it is an input");
     return STATUS_WRONG_USE;
   }
+  interrupt_catch (at_prompt);                  /* before there is a file to take away again */
   if (!output_open (&output, options, at_prompt)) {
     complain_about_file (options->output, "cannot be written", descriptor_reason (errno));
     return STATUS_FAILED;
   }
-  interrupt_catch (at_prompt);
   good = run_session (options, &output, at_prompt);
   good = output_finish (&output, !interrupt_pending ()) && good;
   interrupt_pass_on ();

@@ -22,8 +22,9 @@ source_open (struct source *source, const char *name, struct output *output)
   const bool standard = strcmp (name, "-") == 0;
 
   *source = (struct source) { .name = name, .output = output };
-  source->fd = standard ? STDIN_FILENO : open (name, O_RDONLY | O_CLOEXEC);
-  if (source->fd == -1)
+  /* A pipe that nobody writes to yet is waited for where it is read: signals are let in there.  */
+  source->fd = standard ? STDIN_FILENO : open (name, O_RDONLY | O_CLOEXEC | O_NONBLOCK);
+  if (source->fd == -1 || (!standard && fcntl (source->fd, F_SETFL, 0) == -1))
     return false;
   source->may_wait = fstat (source->fd, &about) != 0 || !S_ISREG (about.st_mode);
   source->block = memory_get (BLOCK, 1);
@@ -45,11 +46,7 @@ may_try_again (const struct source *source)
 {
   if (errno == EINTR)
     return !interrupt_pending ();
-  if (errno == EAGAIN) {
-    struct pollfd wait = { .fd = source->fd, .events = POLLIN };
-    return poll (&wait, 1, -1) == 1 || (errno == EINTR && !interrupt_pending ());
-  }
-  return false;
+  return errno == EAGAIN && interrupt_wait (source->fd, POLLIN) && !interrupt_pending ();
 }
 
 /* Reads the next block.  False at the end.  */
@@ -62,7 +59,7 @@ fill (struct source *source)
     return false;
   if (source->may_wait && source->output != NULL)
     output_flush (source->output);
-  if (source->may_wait && !interrupt_wait (source->fd)) {
+  if (source->may_wait && (!interrupt_wait (source->fd, POLLIN) || interrupt_pending ())) {
     source->ended = true;
     source->next = source->end = 0;
     return false;

@@ -197,9 +197,40 @@ if mkfifo questions answers; then
   IFS= read -r line <&8
   tell "$(case $line in *12000*) ;; *) echo "$line" ;; esac)" "an answer comes before the next question"
   kill -TERM "$program"
+  exec 7>&-                             # whoever lost the signal ends too, and is found out
   wait "$program" 2> found
-  tell "$([ $? = 143 ] || echo "status $?")" "a signal to end has its usual status"
-  exec 7>&- 8<&-
+  status=$?
+  tell "$([ "$status" = 143 ] || echo "status $status")" \
+    "a signal to end has its usual status"
+  exec 8<&-
+
+  # Nobody reads: what does not fit in the pipe is waited for, until the signal comes.
+  yes "$good" | head -n 20000 > many
+  "$GASWRIGHT" -k many > answers 2> err &
+  program=$!
+  exec 8< answers
+  sleep 0.3
+  kill -TERM "$program"
+  (sleep 20; kill -KILL "$program") > found 2>&1 &
+  watch=$!
+  wait "$program" 2> found
+  status=$?
+  tell "$([ "$status" = 143 ] || echo "status $status")" \
+    "so has one while an answer waits for its reader"
+  kill "$watch" 2> found
+  exec 8<&-
+
+  # Nobody writes: a pipe that is only opened.
+  "$GASWRIGHT" questions > out 2> err &
+  program=$!
+  sleep 0.1
+  kill -TERM "$program"
+  exec 7<> questions
+  exec 7>&-
+  wait "$program" 2> found
+  status=$?
+  tell "$([ "$status" = 143 ] || echo "status $status")" \
+    "and one before anybody writes"
 
   "$GASWRIGHT" -o result questions &
   program=$!
@@ -211,8 +242,8 @@ if mkfifo questions answers; then
     sleep 0.05
   done
   kill -TERM "$program"
-  wait "$program" 2> found
   exec 7>&-
+  wait "$program" 2> found
   has result "9000.00" "a run that is broken off leaves the old output file"
   tell "$(find . -name '.result*')" "and nothing beside it"
 else
