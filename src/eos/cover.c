@@ -39,8 +39,11 @@ attraction_of (const struct species *s)
   return isfinite (Vc) && Vc > 0 ? Tc * Vc : Tc * (0.27 * GAS_CONSTANT * Tc / s->critical_pressure);
 }
 
-int
-cover_nearest (const struct cover *cover, const struct species *s)
+/* The row a species is lumped with: of all but water, the one whose van der Waals attraction
+   a = (9/8) R Tc Vc is nearest by ratio, taken from the figures of GERG-2008.  -1 where Tc, or both
+   Vc and pc, are not known.  So benzene is taken for a pentane, krypton for methane.            */
+static int
+nearest_row (const struct cover *cover, const struct species *s)
 {
   const double wanted = attraction_of (s);
   double least = HUGE_VAL;
@@ -97,7 +100,7 @@ cover_fractions (const struct cover *cover, const struct composition *compositio
     int at = cover_find (cover, s->key);
 
     if (at < 0) {
-      at = cover_nearest (cover, s);
+      at = nearest_row (cover, s);
     }
     if (at >= 0) {
       x[at] += composition->fraction[i];

@@ -13,10 +13,6 @@ struct cover { const char *keys; size_t stride, count; };
 
 /* The row of a key, or -1.  */
 int cover_find (const struct cover *, const char *key);
-/* The row a species is lumped with: of all but water, the one whose van der Waals attraction
-   a = (9/8) R Tc Vc is nearest by ratio, taken from the figures of GERG-2008.  -1 where Tc, or both
-   Vc and pc, are not known.  So benzene is taken for a pentane, krypton for methane.            */
-int cover_nearest (const struct cover *, const struct species *);
 /* As in struct equation.  */
 double cover_lumped (const struct cover *, const struct composition *);
 bool cover_all (const struct cover *, const struct composition *, const char **lacking);

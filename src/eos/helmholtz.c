@@ -18,9 +18,21 @@ helmholtz_compact (const double coefficient[], struct helmholtz_mixture *mixture
   mixture->count = (size_t) (to - mixture->terms);
 }
 
+/* tau^t for all slots: tau^whole, whole from HELMHOLTZ_WHOLE_LEAST, and tau^(part/40).  */
+struct tau_powers {
+  double whole[HELMHOLTZ_WHOLE_MOST - HELMHOLTZ_WHOLE_LEAST + 1];
+  double part[HELMHOLTZ_PARTS];
+};
+
+static inline double
+tau_powers_of (const struct tau_powers *powers, struct helmholtz_slot at)
+{
+  return powers->whole[at.whole - HELMHOLTZ_WHOLE_LEAST] * powers->part[at.part];
+}
+
 /* Few roots and one logarithm; all else are products, so that a power is off by some 1e-15.
    Parts that are used are multiples of 1/8 and of 1/20.                                         */
-void
+static void
 tau_powers_set (struct tau_powers *powers, double tau)
 {
   const double inverse = 1 / tau;

@@ -78,18 +78,6 @@ struct helmholtz_value { double a, a1, a2, a3; };
 /* Keeps of COEFFICIENT, one for each slot of the form, what is not 0.  */
 void helmholtz_compact (const double coefficient[], struct helmholtz_mixture *);
 
-/* tau^t for all slots: tau^whole, whole from HELMHOLTZ_WHOLE_LEAST, and tau^(part/40).  */
-struct tau_powers {
-  double whole[HELMHOLTZ_WHOLE_MOST - HELMHOLTZ_WHOLE_LEAST + 1];
-  double part[HELMHOLTZ_PARTS];
-};
-void tau_powers_set (struct tau_powers *, double tau);
-static inline double
-tau_powers_of (const struct tau_powers *powers, struct helmholtz_slot at)
-{
-  return powers->whole[at.whole - HELMHOLTZ_WHOLE_LEAST] * powers->part[at.part];
-}
-
 void helmholtz_set_isotherm (const struct helmholtz_mixture *, double T,
                              struct helmholtz_isotherm *);
 struct helmholtz_value helmholtz_at (const struct helmholtz_isotherm *, double delta);

@@ -67,7 +67,8 @@ place_in_statement (struct fault *fault, const struct statement *s)
   fault->at = s->text_at;
 }
 
-const struct laboratory *
+/* The analyses in the file a statement names, in ARENA.  Kinds: file, laboratory-...  */
+static const struct laboratory *
 file_analyses (struct session *session, struct arena *arena, const struct statement *s,
                struct fault *fault)
 {
@@ -203,7 +204,9 @@ dry_holds (struct session *session, const struct statement *s, const struct labo
   return false;
 }
 
-struct node *
+/* A sample as a list of parts, as if it were typed: a copy of the statement's list with the
+   sample's parts.  *REMARKS, if not null, takes what has to be said of it.                      */
+static struct node *
 file_list (struct session *session, struct arena *arena, const struct statement *s,
            const struct laboratory *lab, size_t sample, struct remark **remarks,
            struct fault *fault)

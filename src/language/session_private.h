@@ -136,14 +136,6 @@ struct laboratory; struct text;
 
 /* Appends what a file holds; false with errno.  */
 bool file_bytes (const char *path, struct text *) MUST_CHECK;
-/* The analyses in the file a statement names, in ARENA.  Kinds: file, laboratory-...  */
-const struct laboratory *file_analyses (struct session *, struct arena *,
-                                        const struct statement *, struct fault *) MUST_CHECK;
-/* A sample as a list of parts, as if it were typed: a copy of the statement's list with the
-   sample's parts.  *REMARKS, if not null, takes what has to be said of it.                      */
-struct node *file_list (struct session *, struct arena *, const struct statement *,
-                        const struct laboratory *, size_t sample, struct remark **remarks,
-                        struct fault *) MUST_CHECK;
 /* Reads the file of a gas that is being defined: its statement gets its parts, and the definition
    what is to be said.                                                                           */
 bool file_bind (struct session *, struct definition *, struct statement *, struct fault *)

@@ -16,7 +16,7 @@ wrong (struct reader_state *r, const struct node *node, const char *why, const c
   return fault_set_at (r->ev->fault, MESSAGE_KIND_WRONG, node->at, why, way_on);
 }
 
-struct raw_fact *
+static struct raw_fact *
 raw_add (struct reader_state *r, enum fact_kind kind)
 {
   r->raw = room_for_one (r->ev->arena, r->raw, r->raw_count, &r->raw_room, sizeof *r->raw);

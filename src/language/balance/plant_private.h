@@ -96,7 +96,6 @@ bool plant_read_known (struct reader_state *, const struct statement *) MUST_CHE
 bool plant_read_per (struct reader_state *, const struct statement *) MUST_CHECK;
 /* The facts of a stream defined before.  */
 bool plant_read_given (struct reader_state *, size_t stream) MUST_CHECK;
-struct raw_fact *raw_add (struct reader_state *, enum fact_kind);
 
 /* plant_figure.c: figures into the network's terms.  */
 bool flow_figure (struct reader_state *, const struct reading *flow, const struct reading *figure,

@@ -15,8 +15,9 @@
 
 /* ---- Gases and their totals ---- */
 
-const char *
-gas_share_text (struct evaluation *ev, double value, double whole)
+/* A figure that may differ from WHOLE only in a digit that is not usually told.  */
+static const char *
+total_digits (struct evaluation *ev, double value, double whole)
 {
   bool hidden = value != whole && fabs (value / whole - 1) < 1e-5;
   return hidden ? arena_format (ev->arena, "%.9g", value) : figure_text (ev->arena, value);
@@ -25,7 +26,7 @@ gas_share_text (struct evaluation *ev, double value, double whole)
 const char *
 gas_total_text (struct evaluation *ev, const struct analysis *analysis, double total)
 {
-  return arena_format (ev->arena, "%s %s", gas_share_text (ev, 100 * total, 100),
+  return arena_format (ev->arena, "%s %s", total_digits (ev, 100 * total, 100),
                        analysis->whole == WHOLE_MASS ? "mass%" : "mol%");
 }
 
@@ -66,7 +67,7 @@ gas_of_analysis (struct evaluation *ev, const struct analysis *analysis,
   }
   if (gas->closed && fabs (gas->scaled - 1) > SCALING_WORTH_A_NOTE && ev->result) {
     note (ev, MESSAGE_NOTE_SCALED, named->name ? named->name : "the list",
-          gas_share_text (ev, gas->scaled, 1),
+          total_digits (ev, gas->scaled, 1),
           gas_total_text (ev, analysis, analysis_total (analysis)));
   }
   if (gas->closed) {

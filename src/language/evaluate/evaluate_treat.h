@@ -18,8 +18,6 @@ const struct analysis *gas_normalised (struct evaluation *, const struct change_
 const struct analysis *gas_without (struct evaluation *, const struct change_of *,
                                     const struct analysis *before) MUST_CHECK;
 
-/* A figure that may differ from WHOLE only in a digit that is not usually told.  */
-const char *gas_share_text (struct evaluation *, double value, double whole);
 /* A share on the basis of the whole: "99.37 mol%".  */
 const char *gas_total_text (struct evaluation *, const struct analysis *, double share);
 /* The part that usually takes the difference: nitrogen if it is there, else the largest.  */

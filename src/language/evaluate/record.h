@@ -21,7 +21,6 @@ struct analysis; struct composition; struct node; struct stream; struct treatmen
 static inline const char *moles_unit (bool flow) { return flow ? "mol/s" : "mol"; }
 static inline const char *mass_unit (bool flow) { return flow ? "kg/s" : "kg"; }
 static inline const char *volume_unit (bool flow) { return flow ? "m3/s" : "m3"; }
-static inline const char *energy_unit (bool flow) { return flow ? "W" : "J"; }
 
 /* NUMBER in the unit of NODE, as typed, which came to SI.  */
 void record_typed (struct evaluation *, const struct node *, double number, double si);
@@ -63,8 +62,6 @@ void record_keeping (struct evaluation *, const struct stream *, const double ke
 
 /* ---- Sums (record_sum.c) ---- */
 
-/* The SI unit of a figure.  */
-const char *record_unit (struct evaluation *, const struct value *);
 void record_sum (struct evaluation *, const struct value *made, double a, double b, bool minus);
 /* A figure, BEFORE at the conditions of FROM, at those of its family now.  */
 void record_restated (struct evaluation *, const struct value *made, double before,

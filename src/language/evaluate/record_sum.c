@@ -4,8 +4,9 @@
 
 #include "language/session_private.h"
 
-const char *
-record_unit (struct evaluation *ev, const struct value *v)
+/* The SI unit of a figure.  */
+static const char *
+unit_of (struct evaluation *ev, const struct value *v)
 {
   return v->measure.ratio == RATIO_MOLE ? "mol/mol" : v->measure.ratio == RATIO_MASS ? "kg/kg"
          : dimension_text (ev->arena, v->measure.dimension);
@@ -17,7 +18,7 @@ record_sum (struct evaluation *ev, const struct value *made, double a, double b,
   if (!ev->workings) {
     return;
   }
-  const char *unit = record_unit (ev, made);
+  const char *unit = unit_of (ev, made);
   RECORD (ev, .name = minus ? "difference" : "sum", .formula = minus ? "c = a - b" : "c = a + b",
           .value = made->si, .unit = unit, .source = STEP_DEFINITION,
           STEP_SYMBOLS (SYMBOL ("a", a, unit), SYMBOL ("b", b, unit)));
@@ -32,7 +33,7 @@ record_restated (struct evaluation *ev, const struct value *made, double before,
   }
   const enum reference_family to = made->measure.family;
   const struct conditions *f = &ev->settings->family[from].at, *t = &ev->settings->family[to].at;
-  const char *unit = record_unit (ev, made);
+  const char *unit = unit_of (ev, made);
   RECORD (ev, .name = "the right side at the conditions of", .of = reference_family_name (to),
           .formula = "q = q_0 (T/p/(T_0/p_0))^k", .value = made->si, .unit = unit,
           .source = STEP_IDEAL_GAS,
@@ -82,9 +83,9 @@ record_product (struct evaluation *ev, const struct value *a, const struct value
   made.measure.dimension = divide ? dimension_over (a->measure.dimension, b->measure.dimension)
                                   : dimension_times (a->measure.dimension, b->measure.dimension);
   RECORD (ev, .name = divide ? "quotient" : "product", .formula = divide ? "c = a/b" : "c = a b",
-          .value = a->si, .unit = record_unit (ev, &made), .source = STEP_DEFINITION,
-          STEP_SYMBOLS (SYMBOL ("a", left, record_unit (ev, a)),
-                        SYMBOL ("b", b->si, record_unit (ev, b))));
+          .value = a->si, .unit = unit_of (ev, &made), .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("a", left, unit_of (ev, a)),
+                        SYMBOL ("b", b->si, unit_of (ev, b))));
 }
 
 void
@@ -98,7 +99,7 @@ record_scaled (struct evaluation *ev, const struct value *before, const struct v
   const struct two_units unit = units_of (v);
   RECORD (ev, .name = "product", .formula = "c = k a",
           .value = stream ? v->stream.moles : part ? v->moles : v->si,
-          .unit = stream ? moles_unit (v->stream.flow) : part ? unit.moles : record_unit (ev, v),
+          .unit = stream ? moles_unit (v->stream.flow) : part ? unit.moles : unit_of (ev, v),
           .source = STEP_DEFINITION,
           STEP_SYMBOLS (SYMBOL ("k", factor, NULL),
                         SYMBOL ("a", stream ? before->stream.moles : part ? before->moles

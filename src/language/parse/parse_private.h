@@ -200,8 +200,6 @@ struct node *parse_state (struct parser *, const struct unit_read *target, struc
 struct node *parse_item (struct parser *, unsigned *group);
 /* target { "," target }, behind `in`; ONE: no more than one.  */
 struct target *parse_targets (struct parser *, bool one);
-/* "as" "picture" TEXT, which is no label of a target  */
-bool at_picture (const struct parser *);
 
 /* -- Statements.  */
 

@@ -153,7 +153,8 @@ parse_conditions (struct parser *p, struct target *target, const struct unit_rea
   return true;
 }
 
-bool
+/* "as" "picture" TEXT, which is no label of a target  */
+static bool
 at_picture (const struct parser *p)
 {
   struct parser ahead = *p;
