@@ -15,7 +15,7 @@ struct stream; struct unit;
 typedef bool command (struct session *, const struct statement *, struct result *,
                       struct fault *);
 
-/* Runs any statement but a question.  Kind not-available for those this version only reads.  */
+/* Runs any statement but a question.  */
 bool command_run (struct session *, const struct statement *, struct result *, struct fault *)
   MUST_CHECK;
 
