@@ -299,7 +299,8 @@ concentration (struct conversion *c)
     return conversion_add (c, phi * factor, &standing);
   }
   if (u->ratio == RATIO_ENERGY) {
-    return fault_set_at (c->ev->fault, MESSAGE_NOT_AVAILABLE, c->at, "calorific values", NULL);
+    return fault_set_at (c->ev->fault, MESSAGE_NOT_AVAILABLE, c->at, "shares by energy",
+                         "ask for one flow over the other: H2 of feed / feed in MJ/MJ net");
   }
   if (u->ratio != RATIO_NONE) {
     if (u->ratio == RATIO_VOLUME && !standing.basis) {

@@ -191,7 +191,7 @@ share_of (struct evaluation *ev, const struct node *node, const struct value *sh
 {
   if (whole->kind == VALUE_STREAM) {
     if (share->measure.ratio == RATIO_ENERGY) {
-      return fault_set_at (ev->fault, MESSAGE_NOT_AVAILABLE, node->a->at, "calorific values",
+      return fault_set_at (ev->fault, MESSAGE_NOT_AVAILABLE, node->a->at, "shares by energy",
                            NULL);
     }
     if (share->si < 0) {
