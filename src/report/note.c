@@ -93,13 +93,17 @@ answer_write (struct writer *w, const struct answer *a)
   text_init (&basis);
   if (figure_is_uncertain (a->value, a->uncertainty))
     figure_write_uncertain (&figure, a->value, &spread, a->uncertainty);
-  else
+  else if (!isnan (a->value))
     figure_write (&figure, &w->style, a->value);
-  text_add_format (&figure, " %s", a->unit);
+  if (!isnan (a->value))
+    text_add_format (&figure, " %s", a->unit);
+  else if (*a->unit != '\0')
+    text_add (&figure, "open");
   text_add (&basis, a->moisture != NULL ? a->moisture : "");
   if (a->basis != NULL && *a->basis != '\0')
     text_add_format (&basis, "%s%s", basis.length > 0 ? ", " : "", a->basis);
-  const char *const cells[] = { a->label != NULL ? a->label : a->what, figure.bytes,
+  const char *const cells[] = { a->label != NULL ? a->label : a->what,
+                                figure.length > 0 ? figure.bytes : "",
                                 spread.length > 0 ? spread.bytes : "",
                                 basis.length > 0 ? basis.bytes : "" };
   w->paper.form->row (&w->paper, 4, cells);

@@ -250,8 +250,32 @@ def checks(tap):
                  "a check has its stated figure and its readings")
 
 
+def balances(tap):
+    """A balance in a note: the verdict, the clash or what is open, and compositions."""
+    blend = ("balance blend; mix header: a + b = c; known a = 60 kmol/h of (CO2 10, N2 rest mol%); "
+             "known b = 40 kmol/h of (CO2 35, N2 rest mol%); ")
+    cases = (
+        ("end; solve", ("COMPLETE", "100.000 kmol/h", "CO2 20, N2 80 mol%")),
+        ("known c = 100 kmol/h; known CO2 of c = 22 mol%; end; solve",
+         ("CLASH: around header, CO2 is out by -2 kmol/h (in less out)",
+          "known CO2 of c = 22 mol%", "alone at fault, it would have to be: 20 mol%")),
+    )
+    with Folder() as folder:
+        for lines, pieces in cases:
+            folder.run('%s%s\nnote "n.md"\n' % (blend, lines))
+            cells = markdown_cells(folder.read("n.md"))[0]
+            tap.tell([one for one in pieces if not any(one in cell for cell in cells)],
+                     "a note has what a balance came to: " + pieces[0])
+        folder.run("balance tee; split fork: a = b + c; known a = 9 kmol/h of CO2; end; solve\n"
+                   'note "n.md"\n')
+        cells = markdown_cells(folder.read("n.md"))[0]
+        tap.tell([] if "SHORT BY 1" in cells and cells.count("open") == 2 else cells,
+                 "a note says which flows are open")
+
+
 def main():
     tap = Tap()
+    balances(tap)
     both_forms(tap)
     inputs(tap)
     odds(tap)

@@ -5,6 +5,7 @@
 
 #include <math.h>
 #include "language/evaluate/record.h"
+#include "language/evaluate/wording.h"
 #include "language/kept.h"
 #include "result/balance_verdict.h"
 #include "result/result.h"
@@ -91,22 +92,75 @@ record_facts (struct session *session, const struct result *result, const struct
   }
 }
 
-/* The flows of a verdict as rows.  */
+/* ---- What a note shows of it ---- */
+
+struct row_list { struct arena *arena; struct answer *first, **last; size_t count; };
+
 static struct answer *
-flows_of (struct arena *arena, const struct balance_verdict *v, size_t *count)
+row_add (struct row_list *rows, const char *what, const char *basis)
 {
-  struct answer *first = NULL, **last = &first;
-  *count = 0;
-  for (size_t i = 0; v->unit_count > 0 && i < v->stream_count; i++) {
-    const struct verdict_stream *s = &v->streams[i];
-    struct answer *a = *last = ARENA_NEW (arena, struct answer);
-    *a = (struct answer) { .what = s->name, .named = true, .value = s->shown[0],
-                           .unit = v->units[0], .uncertainty = s->shown_u, .coverage = 1,
-                           .basis = v->phrase };
-    last = &a->next;
-    ++*count;
+  struct answer *a = ARENA_NEW (rows->arena, struct answer);
+  *a = (struct answer) { .what = what, .named = true, .value = UNSTATED, .unit = "",
+                         .uncertainty = UNSTATED, .coverage = 1, .basis = basis };
+  *rows->last = a;
+  rows->last = &a->next;
+  rows->count++;
+  return a;
+}
+
+/* "stated 1520 +/- 15; moved to 1503.21 +/- 11; -1.12 u", in the words of the heading.  */
+static const char *
+cells_text (struct arena *arena, const struct balance_verdict *v, const struct verdict_row *row)
+{
+  const char *text = "";
+  for (size_t i = 1; i < 4; i++)
+    if (row->cell[i] && *row->cell[i]) {
+      const char *heading = v->heading[i] ? v->heading[i] : "";
+      text = arena_format (arena, "%s%s%s%s%s", text, *text ? "; " : "", heading,
+                           *heading ? (v->clash ? ": " : " ") : "", row->cell[i]);
+    }
+  return text;
+}
+
+/* "CH4 94.79, CO2 2.574 mol%"; without figures: the verdict alone.  */
+static const char *
+parts_text (struct arena *arena, const struct balance_verdict *v, const struct verdict_stream *s)
+{
+  const char *text = "";
+  for (size_t c = 0; c < v->component_count && s->fractions; c++)
+    if (!isnan (s->fractions[c])) {
+      text = arena_format (arena, "%s%s%s %s", text, *text ? ", " : "", v->components[c],
+                           figure_text (arena, 100 * s->fractions[c]));
+    }
+  return *text ? arena_format (arena, "%s mol%%", text) : v->phrase;
+}
+
+/* The verdict, what it rests on, and the flows.  */
+static const struct answer *
+rows_of (struct arena *arena, const struct balance_verdict *v, size_t *count)
+{
+  struct row_list rows = { .arena = arena };
+  const char *what = v->name;
+  rows.last = &rows.first;
+  row_add (&rows, v->name, *v->head ? arena_format (arena, "%s: %s", v->phrase, v->head)
+                                    : v->phrase);
+  row_add (&rows, "count", v->counts);
+  for (const struct verdict_row *row = v->facts; row; row = row->next) {
+    what = *row->cell[0] ? row->cell[0] : what;
+    row_add (&rows, what, row->cell[1]);
   }
-  return first;
+  for (const struct verdict_row *row = v->rows; row; row = row->next) {
+    row_add (&rows, row->cell[0], cells_text (arena, v, row));
+  }
+  for (size_t i = 0; v->unit_count > 0 && i < v->stream_count && !v->clash; i++) {
+    const struct verdict_stream *s = &v->streams[i];
+    struct answer *a = row_add (&rows, s->name, parts_text (arena, v, s));
+    a->value = s->shown[0];
+    a->unit = v->units[0];
+    a->uncertainty = s->shown_u;
+  }
+  *count = rows.count;
+  return rows.first;
 }
 
 void
@@ -117,9 +171,9 @@ plant_record (struct evaluation *ev, const struct statement *s, const struct pla
   struct session *session = ev->session;
   struct value none = value_number (UNSTATED);
   size_t count;
-  const struct answer *flows = flows_of (result->arena, v, &count);
+  const struct answer *rows = rows_of (result->arena, v, &count);
   const double variables = (double) v->variables, equations = (double) v->independent;
-  kept_add (session, &(struct asked) { ev, s, &none, flows, count }, result);
+  kept_add (session, &(struct asked) { ev, s, &none, rows, count }, result);
   record_facts (session, result, plant);
   kept_extend (session, result, &(struct step) {
       .name = "degrees of freedom of", .of = v->name, .formula = "f = v - e",

@@ -2,6 +2,7 @@
 #include "config.h"
 #include "language/balance/verdict_private.h"
 
+#include <float.h>
 #include <math.h>
 #include <string.h>
 #include "gas/species.h"
@@ -61,6 +62,7 @@ fill_stream (struct verdict_maker *m, size_t s, struct verdict_stream *out)
     bool fixed = solution->fixed_fraction[s * n + c]
                  && solution->status != BALANCE_CONTRADICTORY;
     x[c] = fixed && !plant->whole ? solution->fraction[s * n + c] : UNSTATED;
+    x[c] = fabs (x[c]) < DBL_EPSILON ? 0 : x[c];         /* what subtraction leaves of nothing */
     u[c] = isnan (x[c]) ? UNSTATED : uncertainty_of (m, s, c);
   }
   out->fractions = x;
