@@ -241,9 +241,13 @@ computed_add (struct text *out, const struct report_style *style, const struct c
     shown_add (out, style, a->basis);
   weight_close (out, style);
   if (a != NULL && figure_is_uncertain (a->value, a->uncertainty)) {
+    struct text figure;
+    text_init (&figure);
     text_add (out, moist || based ? ", " : "");
-    text_add (out, style->unicode ? "\u00B1 " : "+/- ");
-    figure_plain (out, style, a->uncertainty);
+    text_add (out, plus_minus (style));
+    figure_write_uncertain (&figure, a->value, out, a->coverage * a->uncertainty);
+    coverage_write (out, a->coverage);
+    text_clear (&figure);
   }
   line_end (out);
 }

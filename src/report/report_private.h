@@ -62,6 +62,9 @@ void figure_write_uncertain (struct text *, double value, struct text *spread,
                              double uncertainty);
 /* Is this an uncertainty that can be shown?  */
 bool figure_is_uncertain (double value, double uncertainty);
+const char *plus_minus (const struct report_style *);
+/* " (k=2)", the factor a spread is expanded by; of a standard uncertainty nothing.  */
+void coverage_write (struct text *, double coverage);
 /* Characters before the decimal sign; all of a figure without one that precede an exponent.  */
 size_t figure_whole (const char *figure);
 /* "+5.5 %": two significant digits and the sign.  */

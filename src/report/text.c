@@ -54,14 +54,13 @@ rows_are_named (const struct result *result)
   return false;
 }
 
-static const char *
+const char *
 plus_minus (const struct report_style *style)
 {
   return style->unicode ? "\u00B1 " : "+/- ";
 }
 
-/* Which factor a spread is expanded by; a standard uncertainty says nothing.  */
-static void
+void
 coverage_write (struct text *out, double coverage)
 {
   if (coverage > 1) {

@@ -31,12 +31,6 @@ larger (size_t a, size_t b)
   return a > b ? a : b;
 }
 
-static const char *
-plus_minus (const struct report_style *style)
-{
-  return style->unicode ? "\u00B1 " : "+/- ";
-}
-
 /* The figure of a row into FIGURE, its uncertainty (perhaps nothing) into SPREAD.  */
 static void
 row_write (const struct report_style *style, const struct trend *trend,

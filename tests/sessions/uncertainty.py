@@ -271,6 +271,14 @@ def trials(tap):
     failed = [note.split()[0] for note in first["notes"] if "had no answer" in note]
     tap.tell(session.off(float(failed[0]) if failed else None, 20000 * 0.308538, 0.04),
              "trials below zero are counted")
+    # JCGM 100:2008, eq. 18: U = k u, of the mean of the trials and of a computed figure alike.
+    gas = "gas g = CH4 62.10 +/- 0.30, CO2 rest mol%\nset coverage 2\n"
+    mean = session.answers(gas + "montecarlo 5000 CH4 of g in mol%\n")[-1]["answers"][1]
+    tap.tell(session.off(mean.get("expanded"), 2 * mean["uncertainty"], 1e-12),
+             "the mean is expanded as the first order is")
+    tap.tell(session.off(mean["uncertainty"], 0.30, 0.04), "by what was typed")
+    text = session.run(gas + "check CH4 of g in mol% against 62 mol%\n", "text")[1]
+    tap.tell("" if "± 0.60 (k=2)" in text else text, "what a check computed is expanded, too")
     rows = [row["what"].split(", ")[-1] for row in first["answers"]]
     tap.tell("" if rows == ["first order", "mean", "95 % from", "95 % to", "shortest 95 % from",
                             "shortest 95 % to"] else repr(rows), "the shortest interval where it is "

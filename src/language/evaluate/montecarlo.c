@@ -195,13 +195,15 @@ first_order_holds (const double y[], size_t M, const struct outcome *o, double v
 /* ---- Rows and notes ---- */
 
 static void
-add_row (struct result *result, const struct figure *f, const char *what, double value, double u)
+add_row (const struct trials *t, const struct figure *f, const char *what, double value, double u)
 {
+  struct result *result = t->first->result;
   struct answer *a = result_answer (result);
   a->what = arena_format (result->arena, "%s, %s", f->label ? f->label : f->what, what);
   a->named = true;
   a->value = value;
   a->uncertainty = u;
+  a->coverage = t->settings.coverage;
   a->unit = f->unit_text;
   a->moisture = f->moisture;
   a->basis = f->basis;
@@ -230,12 +232,12 @@ tell_figure (const struct trials *t, double y[], size_t which, const struct budg
   find_moments (y, t->done, &o);
   qsort (y, t->done, sizeof *y, ascending);
   find_intervals (y, t->done, &o);
-  add_row (result, f, "mean", o.mean, o.u);
-  add_row (result, f, "95 % from", o.even.low, UNSTATED);
-  add_row (result, f, "95 % to", o.even.high, UNSTATED);
+  add_row (t, f, "mean", o.mean, o.u);
+  add_row (t, f, "95 % from", o.even.low, UNSTATED);
+  add_row (t, f, "95 % to", o.even.high, UNSTATED);
   if (o.shortest.high - o.shortest.low < SHORTER * (o.even.high - o.even.low)) {
-    add_row (result, f, "shortest 95 % from", o.shortest.low, UNSTATED);
-    add_row (result, f, "shortest 95 % to", o.shortest.high, UNSTATED);
+    add_row (t, f, "shortest 95 % from", o.shortest.low, UNSTATED);
+    add_row (t, f, "shortest 95 % to", o.shortest.high, UNSTATED);
   }
   if (!first_order_holds (y, t->done, &o, f->value, budget->uncertainty)) {
     tell_first_order (result, f, budget->uncertainty);
