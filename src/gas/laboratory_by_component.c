@@ -6,35 +6,40 @@
 #include "support/arena.h"
 #include "support/fault.h"
 
-/* What stands at the head of the names of components, above the first of them.  */
+/* Is row R, above the first component, the one with the headings?  */
+static bool
+is_heading (const struct laboratory *lab, struct arena *arena, size_t r, enum heading_kind kind)
+{
+  if (kind == HEADING_NAMES || kind == HEADING_SAMPLE || kind == HEADING_EMPTY)
+    return true;
+  if (kind == HEADING_DATE || kind == HEADING_OTHER_WORD || kind == HEADING_UNIT)
+    return false;
+  for (size_t k = lab->names + 1; k < lab->rows[r].count; k++) {
+    enum heading_kind over = heading_read (arena, lab->words, cell_slice (lab, r, k)).kind;
+    if (over == HEADING_AMOUNT || over == HEADING_SPREAD || over == HEADING_UNIT)
+      return true;
+  }
+  return false;
+}
+
+/* What stands at the head of the names of components, above the first of them: looked for from
+   below, and what is left told from above.                                                      */
 static bool
 find_headings (struct laboratory *lab, struct arena *arena, size_t first, struct fault *fault)
 {
-  for (size_t r = first; r-- > 0;) {
-    struct heading h = heading_read (arena, lab->words, cell_slice (lab, r, lab->names));
-    if (lab->heading != NOWHERE) {
-      if (!layout_preface (lab, arena, r, fault))
-        return false;
-      continue;
-    }
+  for (size_t r = first; r-- > 0 && lab->heading == NOWHERE;) {
+    enum heading_kind kind
+      = heading_read (arena, lab->words, cell_slice (lab, r, lab->names)).kind;
     if (lab->unit_row == NOWHERE && layout_is_unit_row (lab, arena, r, lab->names)
-        && (h.kind == HEADING_UNIT || h.kind == HEADING_EMPTY) && r > 0
-        && lab->rows[r - 1].count > lab->names + 1) {
+        && (kind == HEADING_UNIT || kind == HEADING_EMPTY) && r > 0
+        && lab->rows[r - 1].count > lab->names + 1)
       lab->unit_row = r;
-      continue;
-    }
-    bool head = h.kind == HEADING_NAMES || h.kind == HEADING_SAMPLE || h.kind == HEADING_EMPTY;
-    for (size_t k = lab->names + 1; !head && h.kind != HEADING_DATE
-                                    && h.kind != HEADING_OTHER_WORD && h.kind != HEADING_UNIT
-                                    && k < lab->rows[r].count; k++) {
-      enum heading_kind kind = heading_read (arena, lab->words, cell_slice (lab, r, k)).kind;
-      head = kind == HEADING_AMOUNT || kind == HEADING_SPREAD || kind == HEADING_UNIT;
-    }
-    if (head)
+    else if (is_heading (lab, arena, r, kind))
       lab->heading = r;
-    else if (!layout_preface (lab, arena, r, fault))
-      return false;
   }
+  for (size_t r = 0; r < first; r++)
+    if (r != lab->heading && r != lab->unit_row && !layout_preface (lab, arena, r, fault))
+      return false;
   return true;
 }
 

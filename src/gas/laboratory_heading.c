@@ -108,7 +108,9 @@ static const char *const other_words[] = {
   "report", "reportno", "cas", "casno", "casnumber", "temperature", "pressure", "flow",
   "humidity", "density", "relativedensity", "molarmass", "wobbe", "wobbeindex",
   "grosscalorificvalue", "netcalorificvalue", "calorificvalue", "dewpoint", "retentiontime",
-  "peakarea", "area", "status", "approved", "checked", "checkedby", "signed", "signature",
+  "peakarea", "area", "area%", "areacounts", "height", "peakheight", "rt", "rettime", "retention",
+  "rrt", "response", "responsefactor", "rf", "status",
+  "approved", "checked", "checkedby", "signed", "signature",
   "bemerkung", "bearbeiter", "limit", "detectionlimit", "lod", "loq", NULL
 };
 /* Of two letters the case counts: u is standard, U expanded (JCGM 100:2008, 2.3.1 and 2.3.5).  */

@@ -273,6 +273,11 @@ SPREADS = [
 
 # What has to be said of a file: name, file, words, piece of a note.
 SAID = [
+    ("what a chromatograph prints beside its shares", "Name,RT,Area,Height,Amount\n"
+     "Methane,1.2,10302,411,60\nCarbon Dioxide,2.3,5021,230,40\nTotal,,,,100\n", "mol%",
+     "not read: column 'RT', column 'Area', column 'Height', line 4 (Total)"),
+    ("what stands above is told from above", "Instrument,GC-7\nOperator,KL\nDate,2026-03-02\n"
+     "Component,Result,Unit\nCH4,60,mol%\nCO2,40,mol%\n", "", "not read: line 1, line 2, line 3"),
     ("layout", "sample;CH4;CO2\nA;60;40\nB;61;39\n", 'sample "B" mol%',
      "a sample in each row, 2 samples, 2 components"),
     ("delimiter and sign", "sample;CH4;CO2\nA;60,5;39,5\n", "mol%",
