@@ -61,7 +61,12 @@ component_named (struct evaluation *ev, const struct node *name, struct componen
     return true;
   case SPECIES_AMBIGUOUS:
     if (!strchr (name->text, '+') || !(out->gas = peak (ev, name->text))) {
-      return fault_set_at (ev->fault, MESSAGE_NAME_OPEN, name->at, name->text, candidates);
+      fault_set_at (ev->fault, MESSAGE_NAME_OPEN, name->at, name->text, candidates);
+      if (strchr (name->text, '+')) {
+        fault_hint (ev->fault, "for all of them define it first, as a list or with what is known: "
+                    "gas %s with molar mass ...", name->text);
+      }
+      return false;
     }
     return true;
   case SPECIES_NONE:
