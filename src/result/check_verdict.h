@@ -52,6 +52,7 @@ struct check_verdict {
   struct check_need *needs;
   struct check_figure *figures;   /* of a sheet; else null */
   size_t figure_count, agreeing;  /* how many figures there are, and agree */
+  const char *open_at;            /* of a sheet: what a volume without its state is counted at */
 };
 
 #endif

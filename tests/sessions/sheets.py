@@ -120,8 +120,20 @@ def made_up(tap):
     tap.tell(missed, "100 sheets made up: the reading is found, or the figure that stands alone")
 
 
+def left_open(tap):
+    """A volume without its state says what it was counted at, unless a reading says that."""
+    before = "gas bio = CH4 60, CO2 40 mol%\n"
+    for mass, taken in (("1150 kg/h", True), ("1215 kg/h", False)):
+        answer = session.answers(before + "sheet meter of bio; 1000 m3/h; %s; end\ncheck meter\n"
+                                 % mass)[-1]
+        said = any("15 degC, 101.325 kPa: its state is not said" in one
+                   for one in answer["taken"])
+        tap.tell([] if said == taken else [str(answer)], "an open volume on a sheet, " + mass)
+
+
 def main():
     tap = session.Tap()
+    left_open(tap)
     fixed(tap)
     lasting(tap)
     made_up(tap)

@@ -306,6 +306,7 @@ struct best {
   int cost;
   struct check_verdict *verdict;
   bool moved;                               /* the best has readings at all */
+  bool placed;                              /* one of them says a volume's state left open */
 };
 
 static bool
@@ -341,6 +342,12 @@ add_set (struct best *best, const char *said)
   best->verdict->reading_count++;
 }
 
+static bool
+says_state (const struct candidate *c)
+{
+  return c->rule && c->rule->change == READING_REFERENCE && c->family == FAMILY_NONE;
+}
+
 /* Tries a set; keeps it if more figures agree under it, or as many and it is as simple.  */
 static void
 try_set (struct best *best, const struct candidate *a, const struct candidate *b)
@@ -366,6 +373,7 @@ try_set (struct best *best, const struct candidate *a, const struct candidate *b
     copy_run (best->sheet, &best->run, &best->try);
   }
   best->moved = true;
+  best->placed = says_state (a) || (b && says_state (b));
 }
 
 static void
@@ -496,6 +504,8 @@ sheet_verdict (struct sheet *sheet, const struct definition *d, const struct rea
   v->outcome = typed.agreeing == sheet->count ? CHECK_HOLDS
                : best.moved ? CHECK_READINGS : CHECK_UNEXPLAINED;
   v->tied = v->reading_count;
+  v->open_at = check->open[SIDE_COMPUTED] && !best.placed
+                 ? check->base[SIDE_COMPUTED].settings.family[FAMILY_STANDARD].text : NULL;
   tell_figures (sheet, &typed, &best.run, v);
   return true;
 }

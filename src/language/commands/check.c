@@ -68,6 +68,9 @@ tell_sheet (struct session *session, struct definition *d, const struct check_ve
     r->fact[3] = a->fact[3];
   }
   definition_tell (session, d, false, result);
+  if (v->open_at) {
+    result_remark (result, MESSAGE_TAKEN_OPEN_VOLUME, "the volume", v->open_at);
+  }
   if (v->tied > 1) {
     result_remark (result, MESSAGE_NOTE_CHECK_TIE,
                    arena_format (result->arena, "%zu", v->tied), NULL);
