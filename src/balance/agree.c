@@ -4,6 +4,7 @@
 #include <gsl/gsl_cdf.h>
 #include <math.h>
 #include <string.h>
+#include "balance/agree_sparse.h"
 #include "balance/reduce.h"
 #include "support/arena.h"
 
@@ -160,13 +161,31 @@ judge (struct core *core, const double rho[], double tolerance)
   core->agree = core->agree && core->p >= least_p;
 }
 
+/* Has any figure several rows?  A share of a stream has.  */
+static bool
+any_of_several (const struct core *core)
+{
+  for (size_t i = 0; i < core->system->rows.count - core->system->structure; i++) {
+    if (core->figure[i] != i) {
+      return true;
+    }
+  }
+  return false;
+}
+
 void
 core_agree (struct core *core)
 {
   const struct system *system = core->system;
-  double *rho = ARENA_ARRAY (core->arena, system->surplus + 1, double), most = 0;
+  double *rho, most = 0;
   double tolerance = out_of_exact * largest_right (system);
   find_sigmas (core);
+  if (!system->left && !any_of_several (core)) {
+    agree_sparsely (core, tolerance, least_p);
+    return;
+  }
+  system_left (core->arena, core->system);
+  rho = ARENA_ARRAY (core->arena, system->surplus + 1, double);
   system_clash (system, core->v, rho);
   for (size_t c = 0; c < system->surplus; c++) {
     most = fmax (most, fabs (rho[c]));

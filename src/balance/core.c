@@ -235,19 +235,19 @@ core_open (struct core *core)
 
 /* What the linear rows come to.  */
 static void
-reduce (struct core *core, const bool take[])
+reduce (struct core *core, const bool take[], size_t most)
 {
   core->system = system_make (core->arena, core->network, take, core->split);
   system_reduce (core->arena, core->system, REDUCE_CORE);
   core->null = NULL;
-  if (core->system->freedom * core->system->columns <= modest) {
+  if (core->system->freedom * core->system->columns <= most) {
     core_open (core);
   }
   core->v = ARENA_ARRAY (core->arena, core->system->columns + 1, double);
   memcpy (core->v, core->system->particular, core->system->columns * sizeof *core->v);
   core->freedom = core->system->freedom;
-  core->surplus = core->system->surplus;
   core_agree (core);
+  core->surplus = core->system->surplus;
 }
 
 /* The linear rows, with all splits that can be made linear, as long as the null space has no more
@@ -269,7 +269,7 @@ core_linear (struct arena *arena, const struct network *network, const bool take
     if (!core_goes_on (options, fault)) {
       return NULL;
     }
-    reduce (core, take);
+    reduce (core, take, most < modest ? most : modest);
   } while (core->agree && core->system->bends > 0
            && core->freedom <= most / (core->system->columns + 1) && straighten (core));
   return core;
@@ -285,6 +285,13 @@ core_make (struct arena *arena, const struct network *network, const bool take[]
   }
   core_open (core);
   return !core->agree || core->system->bends == 0 || core_bend (core, fault) ? core : NULL;
+}
+
+struct core *
+core_outline (struct arena *arena, const struct network *network, const bool take[],
+              const struct solve_options *options, struct fault *fault)
+{
+  return core_linear (arena, network, take, options, few, fault);
 }
 
 bool

@@ -38,6 +38,11 @@ struct core {
 struct core *core_make (struct arena *, const struct network *, const bool take[],
                         const struct solve_options *, struct fault *) MUST_CHECK;
 
+/* The same as far as it goes without solving bent splits, and without a null space that is large:
+   whether the facts agree is all that is asked.                                                 */
+struct core *core_outline (struct arena *, const struct network *, const bool take[],
+                           const struct solve_options *, struct fault *) MUST_CHECK;
+
 /* Do the facts in TAKE clash, as far as can be told without solving bent splits?  */
 bool core_clashes (struct arena *, const struct network *, const bool take[],
                    const struct solve_options *);

@@ -518,6 +518,19 @@ elimination_null (const struct elimination *e, size_t k, double x[])
   back (e, NULL, x);
 }
 
+/* The rows of the steps, backwards, from those of the core.  */
+static void
+back_left (const struct elimination *e, double y[])
+{
+  for (size_t p = e->steps; p-- > 0;) {
+    double sum = 0;
+    for (size_t n = e->step[p].lower; n < e->step[p + 1].lower; n++) {
+      sum -= e->lower.value[n] * y[e->lower.index[n]];
+    }
+    y[e->step[p].row] = sum;
+  }
+}
+
 void
 elimination_left (const struct elimination *e, size_t k, double y[])
 {
@@ -530,11 +543,47 @@ elimination_left (const struct elimination *e, size_t k, double y[])
   } else {
     y[e->core_row[e->core_rows + k - inner]] = 1;
   }
-  for (size_t p = e->steps; p-- > 0;) {
-    double sum = 0;
-    for (size_t n = e->step[p].lower; n < e->step[p + 1].lower; n++) {
-      sum -= e->lower.value[n] * y[e->lower.index[n]];
+  back_left (e, y);
+}
+
+/* From 0.5 to 1.5: Knuth's MMIX multiplier and increment.  */
+static double
+part (unsigned long long *seed)
+{
+  *seed = *seed * 6364136223846793005ULL + 1442695040888963407ULL;
+  return 0.5 + (double) (*seed >> 40) / (double) (1 << 24);
+}
+
+void
+elimination_null_mixed (const struct elimination *e, unsigned long long *seed, double x[])
+{
+  size_t inner = e->core_columns - e->core.rank, freedom = e->columns - elimination_rank (e);
+  memset (x, 0, e->columns * sizeof *x);
+  for (size_t k = 0; k < freedom; k++) {
+    double by = part (seed);
+    for (size_t j = 0; j < e->core_columns && k < inner; j++) {
+      x[e->core_column[j]] += by * space_null (&e->core, j, k);
     }
-    y[e->step[p].row] = sum;
+    if (k >= inner) {
+      x[e->core_column[e->core_columns + k - inner]] = by;
+    }
   }
+  back (e, NULL, x);
+}
+
+void
+elimination_left_mixed (const struct elimination *e, unsigned long long *seed, double y[])
+{
+  size_t inner = e->core_rows - e->core.rank, surplus = e->rows - elimination_rank (e);
+  memset (y, 0, e->rows * sizeof *y);
+  for (size_t k = 0; k < surplus; k++) {
+    double by = part (seed);
+    for (size_t i = 0; i < e->core_rows && k < inner; i++) {
+      y[e->core_row[i]] += by * space_left (&e->core, i, k);
+    }
+    if (k >= inner) {
+      y[e->core_row[e->core_rows + k - inner]] = by;
+    }
+  }
+  back_left (e, y);
 }

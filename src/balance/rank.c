@@ -130,85 +130,99 @@ space_solve (struct arena *arena, const struct space *space, const double b[], d
   }
 }
 
-/* A column of numbers STRIDE apart.  */
+/* A column with what goes along with it behind it; nothing but zeros outside FROM and TO.  */
+struct column { double *x; size_t from, to; };
+
 static double
-column_dot (size_t n, size_t stride, const double a[], const double b[])
+column_dot (const struct column *a, const struct column *b, size_t rows)
 {
+  size_t from = a->from > b->from ? a->from : b->from, to = a->to < b->to ? a->to : b->to;
   double sum = 0;
-  for (size_t i = 0; i < n; i++) {
-    sum += a[i * stride] * b[i * stride];
+  to = to < rows ? to : rows;
+  for (size_t i = from; i < to; i++) {
+    sum += a->x[i] * b->x[i];
   }
   return sum;
 }
 
 static void
-column_add (size_t n, size_t stride, double a[], double factor, const double b[])
+column_add (struct column *a, double factor, const struct column *b)
 {
-  for (size_t i = 0; i < n; i++) {
-    a[i * stride] += factor * b[i * stride];
+  if (fabs (factor) > 0) {
+    a->from = a->from < b->from ? a->from : b->from;
+    a->to = a->to > b->to ? a->to : b->to;
+    for (size_t i = b->from; i < b->to; i++) {
+      a->x[i] += factor * b->x[i];
+    }
   }
 }
 
 static void
-column_scale (size_t n, size_t stride, double a[], double factor)
+column_scale (struct column *a, double factor)
 {
-  for (size_t i = 0; i < n; i++) {
-    a[i * stride] *= factor;
+  for (size_t i = a->from; i < a->to; i++) {
+    a->x[i] *= factor;
   }
 }
 
 static void
-column_swap (size_t n, size_t stride, double a[], double b[])
+columns_read (struct arena *arena, struct column v[], size_t columns, size_t stride, size_t rows,
+              const double a[], size_t more, const double along[])
 {
-  for (size_t i = 0; i < n; i++) {
-    double keep = a[i * stride];
-    a[i * stride] = b[i * stride];
-    b[i * stride] = keep;
+  for (size_t k = 0; k < columns; k++) {
+    v[k] = (struct column) { ARENA_ARRAY (arena, rows + more + 1, double), rows + more, 0 };
+    for (size_t i = 0; i < rows + more; i++) {
+      v[k].x[i] = i < rows ? a[i * stride + k] : along[(i - rows) * stride + k];
+      if (fabs (v[k].x[i]) > 0) {
+        v[k].from = i < v[k].from ? i : v[k].from;
+        v[k].to = i + 1;
+      }
+    }
+    double size = sqrt (column_dot (&v[k], &v[k], rows + more));
+    column_scale (&v[k], size > 0 ? 1 / size : 0);
   }
+}
+
+/* The longest of those from FIRST on, the first of them; how long it is.  */
+static double
+columns_longest (const struct column v[], size_t first, size_t columns, size_t rows, size_t *best)
+{
+  double most = 0;
+  *best = first;
+  for (size_t k = first; k < columns; k++) {
+    double size = column_dot (&v[k], &v[k], rows);
+    *best = size > most ? k : *best;
+    most = fmax (most, size);
+  }
+  return sqrt (most);
 }
 
 size_t
 columns_orthonormal (size_t rows, size_t columns, size_t stride, double a[], size_t more,
                      double along[])
 {
-  size_t done = 0;
-  double none = 0;
-  along = along ? along : &none;
-  for (size_t k = 0; k < columns; k++) {
-    double size = sqrt (column_dot (rows, stride, &a[k], &a[k])
-                        + column_dot (more, stride, &along[k], &along[k]));
-    column_scale (rows, stride, &a[k], size > 0 ? 1 / size : 0);
-    column_scale (more, stride, &along[k], size > 0 ? 1 / size : 0);
-  }
-  for (; done < columns; done++) {
-    size_t best = done;
-    double most = 0;
+  struct arena *arena = arena_create ();
+  struct column *v = ARENA_ARRAY (arena, columns + 1, struct column);
+  size_t done = 0, best;
+  columns_read (arena, v, columns, stride, rows, a, more, along);
+  while (done < columns && columns_longest (v, done, columns, rows, &best) > tolerance) {
+    struct column now = v[best];
+    v[best] = v[done];
+    for (size_t k = 0; k < 2 * done; k++) {
+      column_add (&now, -column_dot (&v[k % done], &now, rows), &v[k % done]);
+    }
+    column_scale (&now, 1 / sqrt (column_dot (&now, &now, rows)));
+    v[done++] = now;
     for (size_t k = done; k < columns; k++) {
-      double size = column_dot (rows, stride, &a[k], &a[k]);
-      best = size > most ? k : best;
-      most = fmax (most, size);
-    }
-    if (!(sqrt (most) > tolerance)) {
-      break;
-    }
-    column_swap (rows, stride, &a[done], &a[best]);
-    column_swap (more, stride, &along[done], &along[best]);
-    for (size_t again = 0; again < 2; again++) {
-      for (size_t k = 0; k < done; k++) {
-        double by = column_dot (rows, stride, &a[k], &a[done]);
-        column_add (rows, stride, &a[done], -by, &a[k]);
-        column_add (more, stride, &along[done], -by, &along[k]);
-      }
-    }
-    most = sqrt (column_dot (rows, stride, &a[done], &a[done]));
-    column_scale (rows, stride, &a[done], 1 / most);
-    column_scale (more, stride, &along[done], 1 / most);
-    for (size_t k = done + 1; k < columns; k++) {
-      double by = column_dot (rows, stride, &a[done], &a[k]);
-      column_add (rows, stride, &a[k], -by, &a[done]);
-      column_add (more, stride, &along[k], -by, &along[done]);
+      column_add (&v[k], -column_dot (&now, &v[k], rows), &now);
     }
   }
+  for (size_t k = 0; k < columns; k++) {
+    for (size_t i = 0; i < rows + more; i++) {
+      *(i < rows ? &a[i * stride + k] : &along[(i - rows) * stride + k]) = v[k].x[i];
+    }
+  }
+  arena_destroy (arena);
   return done;
 }
 

@@ -10,6 +10,10 @@
 /* Rounds of solving for what the rows are still out by.  */
 enum { REFINEMENTS = 3 };
 
+/* Facts, times the square of how many are to spare, up to which left null vectors are made without
+   being asked for.                                                                              */
+static const double modest = 1e6;
+
 struct reduction {
   struct sparse a;               /* scaled; columns are those present */
   const size_t *column;          /* of the network, by column of `a` */
@@ -48,8 +52,9 @@ scaled_rows (struct arena *arena, const struct system *system)
 /* Multipliers that take rows to nothing: those of facts orthonormal, what only balances say left
    out, those of the structure beside them.                                                      */
 static void
-find_left (struct arena *arena, struct system *system, struct reduction *r)
+find_left (struct arena *arena, struct system *system)
 {
+  struct reduction *r = system->reduction;
   size_t m = r->a.rows, k = m - elimination_rank (r->elimination), kept, s = system->structure;
   size_t facts = m - s;
   double *y = ARENA_ARRAY (arena, m + 1, double);
@@ -70,6 +75,44 @@ find_left (struct arena *arena, struct system *system, struct reduction *r)
   }
   system->left = left;
   system->surplus = kept;
+}
+
+/* How many facts are to spare: rows that depend on others, less those of the structure that depend
+   on others of it.                                                                              */
+static size_t
+count_surplus (const struct system *system)
+{
+  struct sparse structure = system->reduction->a;
+  struct arena *arena = arena_create ();
+  size_t surplus = structure.rows - system->rank, among;
+  structure.rows = system->structure;
+  among = structure.rows - elimination_rank (elimination_make (arena, &structure, REDUCE_CORE));
+  arena_destroy (arena);
+  return surplus > among ? surplus - among : 0;
+}
+
+void
+system_left (struct arena *arena, struct system *system)
+{
+  if (!system->left) {
+    find_left (arena, system);
+  }
+}
+
+double *
+system_left_mixed (struct arena *arena, const struct system *system, size_t count)
+{
+  size_t m = system->rows.count, s = system->structure;
+  double *out = ARENA_ARRAY (arena, (m - s) * count + 1, double);
+  double *y = ARENA_ARRAY (arena, m + 1, double);
+  unsigned long long seed = 1;
+  for (size_t k = 0; k < count; k++) {
+    elimination_left_mixed (system->reduction->elimination, &seed, y);
+    for (size_t i = s; i < m; i++) {
+      out[(i - s) * count + k] = y[i];
+    }
+  }
+  return out;
 }
 
 /* Takes the null space out of W, by column of the rows: of all solutions the shortest.  One with
@@ -179,11 +222,17 @@ void
 system_reduce (struct arena *arena, struct system *system, size_t core)
 {
   struct reduction *r = scaled_rows (arena, system);
+  double facts = (double) (r->a.rows - system->structure), spare;
   r->elimination = elimination_make (arena, &r->a, core);
   system->reduction = r;
   system->rank = elimination_rank (r->elimination);
   system->freedom = r->a.columns - system->rank;
-  find_left (arena, system, r);
+  spare = (double) (r->a.rows - system->rank);
+  if (facts * spare * spare <= modest) {
+    find_left (arena, system);
+  } else {
+    system->surplus = count_surplus (system);
+  }
   find_particular (arena, system);
 }
 

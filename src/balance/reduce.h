@@ -7,13 +7,18 @@
 
 struct arena;
 
-/* Fills in what the rows of SYSTEM come to, but the null space.  A surplus is one of facts: what
-   balances say twice is none.  Up to CORE columns are left to dense algebra; REDUCE_CORE is what
-   pays.                                                                                         */
+/* Fills in what the rows of SYSTEM come to, but the null space, and the left null vectors only
+   where they are few.  A surplus is one of facts: what balances say twice is none.  Up to CORE
+   columns are left to dense algebra; REDUCE_CORE is what pays.                                  */
 enum { REDUCE_CORE = 100 };
 void system_reduce (struct arena *, struct system *, size_t core);
 /* Adds the null space, which with little known is large.  */
 void system_open (struct arena *, struct system *);
+/* Adds the left null vectors, if they are not there.  */
+void system_left (struct arena *, struct system *);
+/* COUNT pseudorandom combinations of them, [fact row * COUNT + k]: where every one of these is
+   nothing, they are.  For this they need not be there.                                          */
+double *system_left_mixed (struct arena *, const struct system *, size_t count);
 /* The solution for facts with the scaled RIGHT sides, by fact row, in place of the system's own;
    they must agree.                                                                              */
 void system_solve (const struct system *, const double right[], double v[]);

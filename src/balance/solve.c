@@ -9,6 +9,7 @@
 #include "balance/measured.h"
 #include "balance/rank.h"
 #include "balance/reconcile.h"
+#include "balance/reduce.h"
 #include "balance/settle.h"
 #include "balance/suggest.h"
 #include "support/arena.h"
@@ -112,13 +113,15 @@ static void
 find_redundant (struct arena *keep, const struct core *core, struct solution *solution)
 {
   const struct system *system = core->system;
-  size_t facts = core->network->facts, k = system->surplus, count = 0;
+  size_t facts = core->network->facts, count = 0;
+  size_t k = system->left ? system->surplus : core->network->components + 1;
+  const double *all = system->left ? system->left : system_left_mixed (core->arena, system, k);
   bool *checkable = ARENA_ARRAY (keep, facts + 1, bool);
   size_t *redundant = ARENA_ARRAY (keep, facts + 1, size_t);
   size_t end;
   for (size_t i = system->structure; i < system->rows.count; i = end) {
     size_t fact = system->rows.row[i].of, width;
-    const double *left = &system->left[(i - system->structure) * k];
+    const double *left = &all[(i - system->structure) * k];
     struct space space;
     for (end = i; end < system->rows.count && system->rows.row[end].of == fact; end++) {
       for (size_t c = 0; c < k; c++) {
@@ -180,6 +183,7 @@ answer (struct arena *keep, const struct core *core, struct fault *fault)
   solution->mass_out = edge_mass (core, solution, false);
   if (core->agree) {
     suggest (keep, core, solution);
+    return core_goes_on (core->options, fault) ? solution : NULL;
   } else if (!conflict_find (keep, core, solution, fault)) {
     return NULL;
   }
@@ -248,7 +252,7 @@ take_over (struct solution *solution, const struct solution *reconciled)
 /* Facts that are exact first: they may clash by themselves.  Then what was measured is reconciled
    with them, and all is solved with the figures it was moved to.                                */
 static struct solution *
-solve_measured (struct arena *keep, const struct core *exact, struct fault *fault)
+solve_measured (struct arena *keep, struct core *exact, struct fault *fault)
 {
   const struct network *network = exact->network;
   struct solution reconciled = { .status = BALANCE_DETERMINED }, *solution = NULL;
@@ -256,6 +260,7 @@ solve_measured (struct arena *keep, const struct core *exact, struct fault *faul
   bool *take = ARENA_ARRAY (exact->arena, network->facts + 1, bool);
   const struct core *core;
   if (!exact->agree) {
+    core_open (exact);
     return answer (keep, exact, fault);
   }
   if (!system_reconcile (keep, exact->system, exact->options, &reconciled, fault)) {
@@ -281,13 +286,14 @@ network_solve (struct arena *keep, const struct network *network,
 {
   struct arena *arena = arena_create ();
   bool *take = ARENA_ARRAY (arena, network->facts + 1, bool), measured = false;
-  const struct core *core;
+  struct core *core;
   const struct solution *solution = NULL;
   for (size_t f = 0; f < network->facts; f++) {
     take[f] = !fact_is_measured (network, &network->fact[f]);
     measured = measured || !take[f];
   }
-  core = core_make (arena, network, take, options, fault);
+  core = measured ? core_outline (arena, network, take, options, fault)
+                  : core_make (arena, network, take, options, fault);
   if (core) {
     solution = measured ? solve_measured (keep, core, fault) : solve_exact (keep, core, fault);
   }

@@ -11,10 +11,15 @@
 static const double moves_not = 1e-8;
 /* Of two quantities the first is taken unless the other is better by more than this.  */
 static const double clearly = 1.01;
+/* Part of a gradient that is rounding.  */
+static const double nothing = 1e-14;
 
 struct candidate {
   struct quantity quantity;
-  double *g;                     /* gradient in the null space over its norm */
+  double *g;                     /* gradient in the null space over its norm; in time what of it
+                                    the chosen ones do not cover */
+  double *along;                 /* what they cover, by chosen one */
+  double length;                 /* of g */
   double worth;
 };
 
@@ -49,7 +54,9 @@ consider (struct work *work, struct quantity quantity)
     for (size_t k = 0; k < work->width; k++) {
       g[k] /= size;
     }
-    *candidate = (struct candidate) { quantity, g, worth };
+    *candidate = (struct candidate) { quantity, g, NULL, 1, worth };
+    candidate->length = sqrt (dot (work->width, g, g));
+    candidate->along = ARENA_ARRAY (work->arena, work->width + 1, double);
     work->count++;
   }
 }
@@ -88,91 +95,139 @@ find_candidates (struct work *work)
   }
 }
 
-/* Takes what CHOSEN, orthonormal, covers out of G; what is left of its length.  */
-static double
-clear (const struct work *work, size_t count, double *const chosen[], double g[])
+/* Takes what BEST covers out of all that is left of the gradients.  */
+static void
+clear (struct work *work, size_t m, const double best[])
 {
-  for (int again = 0; again < 2; again++) {
-    for (size_t i = 0; i < count; i++) {
-      double along = dot (work->width, chosen[i], g);
+  for (size_t i = 0; i < work->count; i++) {
+    struct candidate *candidate = &work->candidates[i];
+    double along = dot (work->width, best, candidate->g);
+    if (fabs (along) > nothing) {
+      candidate->along[m] = along;
       for (size_t k = 0; k < work->width; k++) {
-        g[k] -= along * chosen[i][k];
+        candidate->g[k] -= along * best[k];
       }
+      candidate->length = sqrt (dot (work->width, candidate->g, candidate->g));
     }
   }
-  return sqrt (dot (work->width, g, g));
 }
 
 /* The candidate that stands out most, of the first kind that has any.  */
 static size_t
-next_choice (const struct work *work, double *const chosen[], double best[])
+next_choice (const struct work *work)
 {
   size_t found = NOWHERE;
-  double most = 1e-6, *g = ARENA_ARRAY (work->arena, work->width, double);
+  double most = 1e-6;
   for (size_t i = 0; i < work->count; i++) {
-    double length;
+    const struct candidate *candidate = &work->candidates[i];
     if (found != NOWHERE
-        && work->candidates[i].quantity.kind != work->candidates[found].quantity.kind) {
+        && candidate->quantity.kind != work->candidates[found].quantity.kind) {
       break;
     }
-    memcpy (g, work->candidates[i].g, work->width * sizeof *g);
-    length = clear (work, work->chosen, chosen, g);
-    if (length > most * (found == NOWHERE ? 1 : clearly)) {
-      most = length;
+    if (candidate->length > most * (found == NOWHERE ? 1 : clearly)) {
+      most = candidate->length;
       found = i;
-      for (size_t k = 0; k < work->width; k++) {
-        best[k] = g[k] / length;
-      }
     }
   }
   return found;
 }
 
-static void
+/* What is left of the gradient of candidate FOUND, at unit length and once more without what the
+   CHOSEN ones cover.                                                                            */
+static double *
+direction (const struct work *work, size_t found, double *const chosen[])
+{
+  size_t width = work->width;
+  double *best = ARENA_ARRAY (work->arena, width, double), length;
+  memcpy (best, work->candidates[found].g, width * sizeof *best);
+  for (size_t m = 0; m < work->chosen; m++) {
+    double along = dot (width, chosen[m], best);
+    for (size_t k = 0; k < width; k++) {
+      best[k] -= along * chosen[m][k];
+    }
+  }
+  length = sqrt (dot (width, best, best));
+  for (size_t k = 0; k < width; k++) {
+    best[k] /= length;
+  }
+  return best;
+}
+
+/* False: interrupted.  */
+static bool
 choose (struct work *work)
 {
   double **chosen = ARENA_ARRAY (work->arena, work->width + 1, double *);
   work->choice = ARENA_ARRAY (work->arena, work->width + 1, size_t);
   while (work->chosen < work->width) {
-    double *best = ARENA_ARRAY (work->arena, work->width, double);
-    size_t found = next_choice (work, chosen, best);
+    size_t found = next_choice (work);
     if (found == NOWHERE) {
       break;
     }
-    chosen[work->chosen] = best;
+    if (work->core->options->interrupted && work->core->options->interrupted ()) {
+      return false;
+    }
+    chosen[work->chosen] = direction (work, found, chosen);
+    clear (work, work->chosen, chosen[work->chosen]);
     work->choice[work->chosen++] = found;
+  }
+  return true;
+}
+
+/* Candidate = sum of share[m] times chosen m: the gradient of a chosen one lies along those chosen
+   before it and its own.                                                                        */
+static void
+find_share (const struct work *work, const struct candidate *candidate, double share[])
+{
+  memcpy (share, candidate->along, work->chosen * sizeof *share);
+  for (size_t m = work->chosen; m-- > 0;) {
+    const double *along = work->candidates[work->choice[m]].along;
+    share[m] /= along[m];
+    for (size_t k = 0; k < m && fabs (share[m]) > nothing; k++) {
+      share[k] -= along[k] * share[m];
+    }
   }
 }
 
-/* Candidates in the coordinates of the chosen: candidate I = sum of share[m] times chosen m.  */
+/* May the candidate stand for a chosen one?  It does not if it is of another kind, and one that
+   nobody measures.                                                                              */
+static bool
+may_stand_for (const struct candidate *candidate, const struct candidate *chosen)
+{
+  return candidate != chosen
+         && ((candidate->quantity.kind != QUANTITY_COMPONENT
+              && candidate->quantity.kind != QUANTITY_EXTENT)
+             || candidate->quantity.kind == chosen->quantity.kind);
+}
+
+/* The chosen ones, then by chosen one what it could be exchanged for.  */
 static void
 list_set (struct work *work, struct solution *solution)
 {
-  size_t n = work->chosen, count = 0, most = n * (work->count + 1);
-  double *a = ARENA_ARRAY (work->arena, work->width * n + 1, double);
+  size_t n = work->chosen, count = n;
+  bool *stands = ARENA_ARRAY (work->arena, n * work->count + 1, bool);
   double *share = ARENA_ARRAY (work->arena, n + 1, double);
-  struct suggestion *list = ARENA_ARRAY (work->keep, most + 1, struct suggestion);
-  struct space space;
-  for (size_t k = 0; k < work->width; k++) {
+  struct suggestion *list;
+  for (size_t i = 0; i < work->count; i++) {
+    find_share (work, &work->candidates[i], share);
     for (size_t m = 0; m < n; m++) {
-      a[k * n + m] = work->candidates[work->choice[m]].g[k];
+      stands[m * work->count + i]
+        = fabs (share[m]) > 1e-6
+          && may_stand_for (&work->candidates[i], &work->candidates[work->choice[m]]);
+      count += stands[m * work->count + i] ? 1 : 0;
     }
   }
-  space = space_make (work->arena, work->width, n, a);
+  list = ARENA_ARRAY (work->keep, count + 1, struct suggestion);
+  count = 0;
   for (size_t m = 0; m < n; m++) {
     const struct candidate *c = &work->candidates[work->choice[m]];
     list[count++] = (struct suggestion) { c->quantity, c->worth, m };
   }
   for (size_t m = 0; m < n; m++) {
     for (size_t i = 0; i < work->count; i++) {
-      const struct candidate *c = &work->candidates[i];
-      bool shown = c->quantity.kind != QUANTITY_COMPONENT && c->quantity.kind != QUANTITY_EXTENT;
-      if (i != work->choice[m] && (shown || c->quantity.kind
-                                   == work->candidates[work->choice[m]].quantity.kind)) {
-        space_solve (work->arena, &space, c->g, share);
-        if (fabs (share[m]) > 1e-6) {
-          list[count++] = (struct suggestion) { c->quantity, c->worth, m };
-        }
+      if (stands[m * work->count + i]) {
+        const struct candidate *c = &work->candidates[i];
+        list[count++] = (struct suggestion) { c->quantity, c->worth, m };
       }
     }
   }
@@ -297,7 +352,9 @@ suggest (struct arena *keep, const struct core *core, struct solution *solution)
                        .width = core->freedom };
   if (core->freedom > 0) {
     find_candidates (&work);
-    choose (&work);
+    if (!choose (&work)) {
+      return;
+    }
     list_set (&work, solution);
     find_useless (&work, solution);
     find_left (&work, solution);

@@ -69,8 +69,9 @@ struct system {
                                     until `system_open` */
   const double *particular;      /* by column, in v: least squares where the facts clash */
   const double *left;            /* [fact row * surplus + k]: multipliers of facts which some of the
-                                    structure's take to nothing, orthonormal */
-  const struct reduction *reduction;
+                                    structure's take to nothing, orthonormal; null until
+                                    `system_left` where there are many */
+  struct reduction *reduction;
 };
 
 /* The rows of NETWORK with the facts in TAKE, with the splits as SPLIT says (null: bent, but for

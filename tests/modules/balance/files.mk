@@ -33,6 +33,8 @@ suites += %D%/t_large
 %C%_t_large_SOURCES = \
   %D%/chain.c \
   %D%/chain.h \
+  %D%/metered.c \
+  %D%/metered.h \
   %D%/t_large.c
 %C%_t_large_LDADD = $(with_balance)
 

@@ -4,6 +4,7 @@
 
 #include "chain.h"
 #include "libtest.h"
+#include "metered.h"
 #include "balance/solution.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -88,10 +89,53 @@ clashes (void)
   }
 }
 
+/* A pipe of many meters that all say what flows in it: its flow is their mean, and any of them
+   could be done without.  With uncertainties stated, with digits only, and with one far off.    */
+static void
+one_pipe (void)
+{
+  enum { UNITS = 300 };
+  for (int way = 0; way < 3; way++) {
+    struct metered p;
+    struct fault fault;
+    const struct solution *s;
+    unsigned long long seed = 3;
+    double mean = 0;
+    metered_init (&p, 1, UNITS + 1);
+    for (size_t k = 0; k <= UNITS; k++) {
+      double y = 100 + 0.3 * (metered_uniform (&seed) - 0.5) + (way == 2 && k == 77 ? 2 : 0);
+      struct fact *fact = metered_total (&p, k, y, way == 0 ? 0.1 : (double) NAN);
+      fact->rounding = way == 0 ? 0 : 0.1 * sqrt (3);
+      mean += y / (UNITS + 1);
+      if (k < UNITS) {
+        metered_boundary_of (&p, BOUNDARY_MIX, 1, &k, 1, (const size_t[]) { k + 1 });
+      }
+    }
+    fault_init (&fault, p.arena);
+    s = network_solve (p.arena, &p.network, &usual, &fault);
+    test_about ("way %d", way);
+    NEED (s);
+    SAME_INT (s->status, way == 0 ? BALANCE_RECONCILED : way == 1 ? BALANCE_REDUNDANT
+                                                                  : BALANCE_CONTRADICTORY);
+    SAME_INT (s->count.surplus, UNITS);
+    SAME_INT (s->redundant_count, UNITS + 1);
+    if (way < 2) {
+      NEAR (s->value[0], mean, 1e-9);
+      NEAR (s->value[UNITS], mean, 1e-9);
+      CHECK (s->fixed[UNITS] && s->fixed_total[UNITS]);
+    } else {
+      NEED (s->conflict);
+      SAME_INT (s->conflict->count, 2);
+    }
+    metered_clear (&p);
+  }
+}
+
 static const struct test_case cases[] = {
   { "300 units have their closed form", determined },
   { "what is open far off leaves the rest fixed", short_of_some },
   { "a clash is found among thousands of rows", clashes },
+  { "hundreds of meters in one pipe have a mean", one_pipe },
   { NULL, NULL }
 };
 
