@@ -340,30 +340,31 @@ leave_out (struct gross *g, struct arena *fits, const struct adjustment at[],
 {
   size_t n = g->measured->figures, count = 0;
   struct elimination *steps = ARENA_ARRAY (g->arena, n + 1, struct elimination);
-  struct fit fit = *g->fit;
+  struct fit *fit = ARENA_NEW (g->arena, struct fit);
   double critical;
   bool done = true;
-  while (!chi2_passes (fit.chi2, fit.freedom, g->options->confidence) && fit.freedom > 1) {
+  *fit = *g->fit;
+  while (!chi2_passes (fit->chi2, fit->freedom, g->options->confidence) && fit->freedom > 1) {
     size_t i = greatest (at, g->measured->left_out, n);
     if (i == n) {
       break;
     }
-    struct elimination step = { .adjustment = i, .chi2 = fit.chi2, .z = at[i].z,
-                                .freedom = fit.freedom };
+    struct elimination step = { .adjustment = i, .chi2 = fit->chi2, .z = at[i].z,
+                                .freedom = fit->freedom };
     note_ties (g, at, &step);
     g->measured->left_out[i] = true;
-    if (!fit_again (g, fits, &fit, &done, fault)) {
+    if (!fit_again (g, fits, fit, &done, fault)) {
       return false;
     }
     if (!done) {
       break;
     }
-    step.implied = figure_value (&g->measured->figure[i], fit.v);
-    step.chi2_left = fit.chi2;
-    step.freedom_left = fit.freedom;
-    step.value = values_of (g, &fit);
+    step.implied = figure_value (&g->measured->figure[i], fit->v);
+    step.chi2_left = fit->chi2;
+    step.freedom_left = fit->freedom;
+    step.value = values_of (g, fit);
     steps[count++] = step;
-    g->fit = &fit;
+    g->fit = fit;
     at = adjust_all (g, &critical);
   }
   solution->eliminations = steps;

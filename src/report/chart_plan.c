@@ -111,9 +111,9 @@ find_columns (struct arena *arena, struct chart_plan *plan, bool back[])
 {
   const struct chart *chart = plan->chart;
   char *state = ARENA_ARRAY (arena, chart->box_count, char);
-  for (int outside = 1; outside >= 0; outside--)
+  for (int round = 0; round < 2; round++)
     for (size_t b = 0; b < chart->box_count; b++)
-      if (state[b] == 0 && feeds_from_outside (chart, (int) b) >= outside)
+      if (state[b] == 0 && (round == 1 || feeds_from_outside (chart, (int) b)))
         find_loops (chart, (int) b, state, back);
   close_by_smallest (arena, chart, back);
   for (bool moved = true; moved;) {

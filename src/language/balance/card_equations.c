@@ -212,9 +212,10 @@ card_of_detectability (const struct plant *plant, struct result *result)
                                                             component_name (plant, a->component),
                                                             f->words) : f->words);
     cells[0] = (struct cell) { .value = a->stated_u * f->per, .is_number = true };
-    cells[1] = isnan (a->detectable) ? (struct cell) { .text = "nothing checks it" }
-                                     : (struct cell) { .value = a->detectable * f->per,
-                                                       .is_number = true };
+    cells[1] = (struct cell) { .value = a->detectable * f->per, .is_number = true };
+    if (isnan (a->detectable)) {
+      cells[1] = (struct cell) { .text = "nothing checks it" };
+    }
     cells[2].text = f->unit;
   }
   card_add_line (result, card, count ? "an error of this size is found in 80 of 100 cases, at 95 %"

@@ -109,7 +109,7 @@ double digits_rounding (const struct node *);
 /* plant_spread.c: uncertainties of the facts that a line has added, FIRST on.  */
 typedef bool plant_line_reader (struct reader_state *, const void *);
 bool plant_read_spread (struct reader_state *, plant_line_reader *, const void *line,
-                        const struct plant *base) MUST_CHECK;
+                        const struct plant *) MUST_CHECK;
 
 /* plant_network.c: columns and rows.  */
 /* TOLD: how many components a line `components` names.  */

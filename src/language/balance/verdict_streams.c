@@ -176,8 +176,11 @@ is_shown (const struct verdict_maker *m, const struct verdict_stream *stream)
 static struct cell
 number_cell (double value)
 {
-  return isnan (value) ? (struct cell) { .text = "" }
-                       : (struct cell) { .value = value, .is_number = true };
+  struct cell cell = { .value = value, .is_number = true };
+  if (isnan (value)) {
+    cell = (struct cell) { .text = "" };
+  }
+  return cell;
 }
 
 static void
@@ -218,9 +221,8 @@ stream_table (struct verdict_maker *m)
     for (size_t u = 0; u < v->unit_count; u++) {
       cells[k++] = number_cell (stream->shown[u]);
       if (u == 0 && spread) {
-        cells[k++] = stream->shown_u > 0
-                       ? (struct cell) { .text = arena_format (m->arena, "%.2g", stream->shown_u) }
-                       : (struct cell) { .text = "" };
+        cells[k++].text = stream->shown_u > 0 ? arena_format (m->arena, "%.2g", stream->shown_u)
+                                              : "";
       }
     }
     for (size_t c = 0; c < v->component_count; c++) {

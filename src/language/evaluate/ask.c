@@ -285,9 +285,8 @@ question_answer (struct evaluation *ev, const struct statement *s)
   struct value value;
   struct figures figures = { NULL, 0, 0 };
   struct result *result = ev->result;
-  struct workings steps;
-  workings_init (&steps, ev->arena);
-  ev->workings = &steps;
+  ev->workings = ARENA_NEW (ev->arena, struct workings);
+  workings_init (ev->workings, ev->arena);
   if (!question_figures (ev, s, &value, &figures)) {
     return false;
   }
