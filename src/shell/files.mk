@@ -24,8 +24,6 @@ gaswright_LDADD = %D%/libterminal.a $(upto_shell) $(READLINE_LIBS) $(GSL_LIBS)
   %D%/options.c \
   %D%/options.def \
   %D%/options.h \
-  %D%/outfile.c \
-  %D%/outfile.h \
   %D%/output.c \
   %D%/output.h \
   %D%/pager.c \

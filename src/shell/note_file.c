@@ -13,8 +13,8 @@
 #include "result/note.h"
 #include "result/result.h"
 #include "shell/descriptor.h"
-#include "shell/outfile.h"
 #include "support/fault.h"
+#include "support/outfile.h"
 #include "support/text.h"
 
 /* Today, or the day SOURCE_DATE_EPOCH says (reproducible-builds.org, specification 1.1).  */

@@ -8,7 +8,7 @@
 
 #include <stdbool.h>
 #include "report/report.h"
-#include "shell/outfile.h"
+#include "support/outfile.h"
 #include "support/check.h"
 #include "support/text.h"
 

@@ -21,6 +21,8 @@ noinst_LIBRARIES += %D%/libsupport.a
   %D%/message.h \
   %D%/number.c \
   %D%/number.h \
+  %D%/outfile.c \
+  %D%/outfile.h \
   %D%/quadratic.c \
   %D%/quadratic.h \
   %D%/reader.c \

@@ -187,6 +187,13 @@ runs 0 "an output file again" -o result -e "$good"
 tell "$(find result ! -perm 640)" "keeps its rights"
 runs 1 "the answers before a mistake are kept" -o result -e '9 kg in g' -e "$bad"
 has result "9000.00" "in the output file"
+echo old > real.gw
+chmod 640 real.gw
+ln -s real.gw kept.gw
+runs 0 "a session is kept where a link leads" -e 'let a = 5' -e 'save "kept.gw"'
+has real.gw "let a = 5" "in the file it leads to"
+tell "$([ -h kept.gw ] || echo "a file of its own")$(find real.gw ! -perm 640)" "which stays, as do rights"
+runs 1 "no session is kept where no file can be" -e 'save "absent/kept.gw"'
 
 # Whoever gives statements one by one has its answers.
 if mkfifo questions answers; then

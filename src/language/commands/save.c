@@ -4,11 +4,11 @@
 #include <errno.h>
 #include <stdio.h>
 #include <string.h>
-#include <sys/stat.h>
 #include <unistd.h>
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
+#include "support/outfile.h"
 #include "support/text.h"
 
 /* One statement on one line: line breaks become blanks, remarks inside are left out.  */
@@ -95,25 +95,26 @@ session_write (const struct session *s, struct text *out)
   arena_destroy (arena);
 }
 
-/* Written beside the target and renamed, so that a file is whole or as it was.  */
 static bool
-write_file (const char *path, const struct text *text, struct arena *arena)
+write_file (const char *path, const struct text *text)
 {
-  const char *beside = arena_format (arena, "%s.%ld.part", path, (long) getpid ());
-  FILE *file = fopen (beside, "w");
-  if (!file) {
+  struct outfile file;
+  if (!outfile_open (&file, path)) {
     return false;
   }
-  bool done = fwrite (text->bytes, 1, text->length, file) == text->length;
-  done = fflush (file) == 0 && done;
-  done = fclose (file) == 0 && done;
-  if (!done || rename (beside, path) != 0) {
-    int reason = errno;
-    (void) remove (beside);
+  FILE *stream = fdopen (dup (file.fd), "w");
+  bool done = stream && fwrite (text->bytes, 1, text->length, stream) == text->length;
+  int reason = errno;
+  if (stream && fclose (stream) != 0 && done) {
+    done = false;
+    reason = errno;
+  }
+  if (!done) {
+    outfile_drop (&file);
     errno = reason;
     return false;
   }
-  return true;
+  return outfile_keep (&file);
 }
 
 bool
@@ -127,7 +128,7 @@ command_save (struct session *session, const struct statement *s, struct result 
   text_init (&text);
   text_add (&text, "# gaswright\n");
   session_write (session, &text);
-  bool done = write_file (s->text, &text, result->arena);
+  bool done = write_file (s->text, &text);
   text_clear (&text);
   if (!done) {
     return fault_set_at (fault, MESSAGE_FILE, s->text_at, s->text, strerror (errno));

@@ -1,5 +1,5 @@
 #include "config.h"
-#include "shell/outfile.h"
+#include "support/outfile.h"
 
 #include <errno.h>
 #include <fcntl.h>

@@ -2,8 +2,8 @@
 
    Until then the file of that name stays as it was, and it stays so if the run is broken off.  What
    is no plain file (a device, a pipe) is written at once.                                       */
-#ifndef SHELL_OUTFILE_H
-#define SHELL_OUTFILE_H
+#ifndef SUPPORT_OUTFILE_H
+#define SUPPORT_OUTFILE_H
 
 #include <stdbool.h>
 #include "support/check.h"
