@@ -72,6 +72,7 @@ endif
 # Speed and memory: make bench.
 EXTRA_PROGRAMS = %D%/bench/equations %D%/bench/measure %D%/bench/networks
 EXTRA_DIST += %D%/bench/bench.sh
+EXTRA_DIST += %D%/bench/typed.awk
 %C%_bench_measure_SOURCES = %D%/bench/measure.c
 %C%_bench_equations_SOURCES = \
   %D%/bench/equations.c \

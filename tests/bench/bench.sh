@@ -131,4 +131,22 @@ network "" "below 500 ms" 333
 network "" "below 5000 ms" 3333
 network ", short by 3" "" 333 3
 network " that clashes" "" 333 0 3 0.01
+
+# typed WAY UNITS AIM: a metered line of units, read, reconciled and printed
+typed() {
+  awk -v units="$2" -v way="$1" -f "$(dirname "$0")/typed.awk" > "$work/typed"
+  # shellcheck disable=SC2046  # three words
+  set -- "$@" $("$measure" 3 "$work/typed" "$program")
+  row "$2 metered units typed, $1" "$4 ms, $6 kB" "$3"
+  took=$4
+}
+
+typed gas 100 "below 100 ms"
+typed gas 1000 "below 1500 ms"
+typed flows 100 "below 100 ms"
+short=$took
+typed flows 1000 "below 1500 ms"
+typed flows 10000 ""
+row "grows with the units to the power" \
+  "$(awk -v a="$short" -v b="$took" 'BEGIN { printf "%.2f", log(b / a) / log(100) }')" "1.2 at most"
 "$equations"
