@@ -21,6 +21,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/balance/verdict_open.c \
   %D%/balance/verdict_private.h \
   %D%/balance/verdict_reconciled.c \
+  %D%/balance/verdict_round.c \
   %D%/balance/verdict_streams.c \
   %D%/block.c \
   %D%/check/candidates.c \

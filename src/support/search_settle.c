@@ -12,7 +12,7 @@
    quadratic problem under the conditions made linear, or where those contradict each other
    Levenberg's (Quarterly of Applied Mathematics 2 (1944) 164) within the bounds.  Then sequential
    quadratic programming along such points: the step from a quadratic model of the Lagrangian with
-   Powell's damped update (Lecture Notes in Mathematics 630 (1978) 144, eq. 5.9 and 5.10), each
+   Powell's damped update (LNM 630 (1978) 144, eq. 5.9 and 5.10), each
    point tried being restored to the conditions before its objective is compared, as in the
    gradient restoration of Miele, Huang and Heideman (Journal of Optimization Theory and
    Applications 4 (1969) 213).  It ends where no step is left: the conditions of Karush, Kuhn and

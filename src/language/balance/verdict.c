@@ -287,6 +287,7 @@ plant_verdict (struct evaluation *ev, const struct plant *plant, const struct ta
   close_balance (&m);
   negative_flows (&m);
   verdict_moved (&m);
+  verdict_round (&m);
   verdict_around (&m);
   return verdict;
 }

@@ -38,6 +38,7 @@ void verdict_open (struct verdict_maker *);              /* verdict_open.c */
 void verdict_clash (struct verdict_maker *);             /* verdict_clash.c */
 void verdict_reconciled (struct verdict_maker *);        /* verdict_reconciled.c */
 void verdict_moved (struct verdict_maker *);              /* verdict_moved.c */
+void verdict_round (struct verdict_maker *);              /* verdict_round.c */
 void verdict_around (struct verdict_maker *);            /* verdict_around.c */
 
 #endif
