@@ -32,6 +32,8 @@ gaswright_LDADD = %D%/libterminal.a $(upto_shell) $(READLINE_LIBS) $(GSL_LIBS)
   %D%/paste.h \
   %D%/phrase.c \
   %D%/phrase.h \
+  %D%/rows.c \
+  %D%/rows.h \
   %D%/script.c \
   %D%/script.h \
   %D%/source.c \

@@ -17,6 +17,7 @@
 #include "shell/options.h"
 #include "shell/output.h"
 #include "shell/prompt.h"
+#include "shell/rows.h"
 #include "shell/script.h"
 #include "shell/version.h"
 #include "support/arena.h"
@@ -37,8 +38,8 @@ end_without_memory (void)
   _exit (STATUS_FAILED);
 }
 
-/* Runs the files, or what comes on standard input, then the statements of the command line.  An
-   option that repeats those statements for every row of a table belongs behind the files.        */
+/* Runs the files, or what comes on standard input, then the statements of the command line, once
+   or for every row of a table.                                                                  */
 static void
 run_scripts (struct script *script, const struct options *options)
 {
@@ -52,6 +53,10 @@ run_scripts (struct script *script, const struct options *options)
   if (options->file_count == 0 && !options->has_statements) {
     if (!script_run_file (script, "-"))
       return;
+  }
+  if (options->rows != NULL) {
+    rows_run (script, options->rows, &options->statements);
+    return;
   }
   if (options->has_statements && !script_run (script, &reader))
     script->failed = script->failed || script->output->error != 0;
@@ -130,6 +135,8 @@ input_in_danger (const struct options *options)
     if (outfile_is_input (options->output, options->files[i]))
       return options->files[i];
   }
+  if (options->rows != NULL && outfile_is_input (options->output, options->rows))
+    return options->rows;
   return options->file_count == 0 && outfile_is_input (options->output, "-") ? "-" : NULL;
 }
 

@@ -70,6 +70,9 @@ take_option (struct options *options, enum option_name name, const char *value)
   switch (name) {
     case OPTION_EVALUATE:
       return add_statement (options, value);
+    case OPTION_ROWS:
+      options->rows = value;
+      return *value != '\0';
     case OPTION_FORMAT:
       return read_format (options, value);
     case OPTION_KEEP_GOING:
@@ -172,6 +175,10 @@ options_read (struct options *options, int argc, char *argv[], struct text *comp
   }
   options->files = argv + optind;
   options->file_count = (size_t) (argc - optind);
+  if (options->rows != NULL && !options->has_statements) {
+    text_add (complaint, "--rows needs a statement for its rows: -e STATEMENT");
+    return false;
+  }
   return true;
 }
 

@@ -16,7 +16,7 @@ struct options {
   enum report_format format;
   enum option_colour colour;
   bool keep_going, no_init, help, version;
-  const char *tables, *output;
+  const char *tables, *output, *rows;
   bool has_statements;
   struct text statements;
   char *const *files;

@@ -27,6 +27,7 @@ session_tests = \
   %D%/quarrels.sh \
   %D%/refused.sh \
   %D%/roundtrips.sh \
+  %D%/rows.sh \
   %D%/scenarios.sh \
   %D%/sheets.sh \
   %D%/treatments.sh \
