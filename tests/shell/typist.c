@@ -255,6 +255,7 @@ main (int argc, char *argv[])
     return STATUS_NOT_TRIED;
   }
   if (play.program == 0) {
+    signal (SIGINT, SIG_DFL);                     /* ignored where the tests run behind a shell */
     execvp (argv[optind], argv + optind);
     _exit (STATUS_NOT_TRIED);
   }
