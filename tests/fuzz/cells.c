@@ -70,7 +70,8 @@ look_at_fault (const struct fault *fault, const char *text, size_t n)
   if (fault->fact[0] == NULL || strncmp (fault->fact[0], name, sizeof name - 1) != 0)
     broken (text, n, "a fault does not name the file");
   for (int i = 0; i < MESSAGE_FACTS; i++)
-    if (fault->fact[i] != NULL && strstr (fault->fact[i], "(null)") != NULL)
+    if (fault->fact[i] != NULL && strstr (fault->fact[i], "(null)") != NULL
+        && memmem (text, n, "(null)", sizeof "(null)" - 1) == NULL)      /* it may be quoted */
       broken (text, n, "a null in a sentence");
 }
 
