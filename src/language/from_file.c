@@ -22,6 +22,15 @@ struct file_read {
 
 /* ---- The file ---- */
 
+/* Bytes of a file: what is read within seconds.  */
+enum { FILE_MOST = 16 * 1000 * 1000 };
+
+const char *
+file_reason (int error)
+{
+  return error == EFBIG ? "it is larger than 16 MB; divide it" : strerror (error);
+}
+
 bool
 file_bytes (const char *path, struct text *text)
 {
@@ -31,11 +40,11 @@ file_bytes (const char *path, struct text *text)
   if (!file) {
     return false;
   }
-  while ((n = fread (block, 1, sizeof block, file)) > 0) {
+  while (text->length <= FILE_MOST && (n = fread (block, 1, sizeof block, file)) > 0) {
     text_add_bytes (text, block, n);
   }
-  int reason = errno;
-  bool done = !ferror (file);
+  int reason = text->length > FILE_MOST ? EFBIG : errno;
+  bool done = text->length <= FILE_MOST && !ferror (file);
   (void) fclose (file);
   errno = reason;
   return done;
@@ -90,7 +99,7 @@ file_analyses (struct session *session, struct arena *arena, const struct statem
                                        is_gas_of, session };
   text_init (&text);
   if (!file_bytes (s->text, &text)) {
-    fault_set_at (fault, MESSAGE_FILE, s->text_at, s->text, strerror (errno));
+    fault_set_at (fault, MESSAGE_FILE, s->text_at, s->text, file_reason (errno));
     text_clear (&text);
     return NULL;
   }

@@ -136,6 +136,8 @@ struct laboratory; struct text;
 
 /* Appends what a file holds; false with errno.  */
 bool file_bytes (const char *path, struct text *) MUST_CHECK;
+/* Why it did not, from errno.  */
+const char *file_reason (int error);
 /* Reads the file of a gas that is being defined: its statement gets its parts, and the definition
    what is to be said.                                                                           */
 bool file_bind (struct session *, struct definition *, struct statement *, struct fault *)

@@ -119,6 +119,16 @@ has err "--format cannot be 'xml'" "that is said"
 runs 2 "a colour that does not exist" --color=red
 runs 2 "rows are no option of this version" --rows a.csv
 
+# A file without an end is not read for ever, nor one that fills the memory.
+if [ -r /dev/zero ]; then
+  runs 1 "a file of analyses that has no end" -e 'gas a from "/dev/zero"'
+  has err "it is larger than 16 MB" "is refused"
+  runs 1 "a file of statements that has none" -e 'open "/dev/zero"'
+  has err "it is larger than 16 MB" "is refused too"
+else
+  skip "no /dev/zero" "a file of analyses that has no end"
+fi
+
 # Order, forms, colour.
 "$GASWRIGHT" -k -e "$good" -e "$bad" -e '7 kg in g' > both 2>&1
 order=$(awk '/12000/ { print "first" } /no unit/ { print "mistake" } /7000/ { print "second" }' both |

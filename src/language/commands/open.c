@@ -90,7 +90,7 @@ command_open (struct session *session, const struct statement *s, struct result 
   text_init (&text);
   if (!file_bytes (s->text, &text)) {
     text_clear (&text);
-    return fault_set_at (fault, MESSAGE_FILE, s->text_at, s->text, strerror (errno));
+    return fault_set_at (fault, MESSAGE_FILE, s->text_at, s->text, file_reason (errno));
   }
   undo_group_open (session);
   bool done = run_lines (session, s, &text, result, fault);
