@@ -279,6 +279,26 @@ question_tell_taken (struct evaluation *ev, const struct statement *s,
   result_sort_taken (ev->result);
 }
 
+/* An answer that says how sure it is says so too where what was taken could move it further: all
+   usual alternatives at once, in the worst way.                                                 */
+static void
+tell_total_shift (struct evaluation *ev, const struct answer *answers)
+{
+  double total = 0, least = (double) INFINITY;
+  for (const struct remark *r = ev->result->taken; r; r = r->next) {
+    total += r->alternative && !isnan (r->effect) ? fabs (r->effect) : 0;
+  }
+  for (const struct answer *a = answers; a; a = a->next) {
+    if (a->uncertainty > 0 && fabs (a->value) > 0) {
+      least = fmin (least, a->uncertainty / fabs (a->value));
+    }
+  }
+  if (total > least) {
+    result_remark (ev->result, MESSAGE_NOTE_TOTAL_SHIFT, rough_text (ev->arena, 100 * total),
+                   rough_text (ev->arena, 100 * least));
+  }
+}
+
 bool
 question_answer (struct evaluation *ev, const struct statement *s)
 {
@@ -295,6 +315,7 @@ question_answer (struct evaluation *ev, const struct statement *s)
     return false;
   }
   question_tell_taken (ev, s, &figures);
+  tell_total_shift (ev, answers);
   if (ev->touched & TOUCH_BELOW) {
     tell_below (ev, s, &figures);
   }
