@@ -233,6 +233,10 @@ bool question_figures (struct evaluation *, const struct statement *, struct val
 bool question_again (struct evaluation *, const struct statement *, struct figures *) MUST_CHECK;
 /* Puts what was taken into the evaluation's result, with what the usual alternatives would do.  */
 void question_tell_taken (struct evaluation *, const struct statement *, const struct figures *);
+/* The same of anything that can be worked out again, by AGAIN, under an evaluation prepared.  */
+struct retold { bool (*again) (struct evaluation *, const void *with, struct figures *);
+              const void *with; };
+void retold_taken (struct evaluation *, const struct retold *, const struct figures *);
 /* Puts all there is to say of a question into the evaluation's result.  */
 bool question_answer (struct evaluation *, const struct statement *) MUST_CHECK;
 /* Runs a question: figures, uncertainties, assumptions with their effects, notes.  */

@@ -85,6 +85,64 @@ make_stream (struct session *session, struct evaluation *ev, const struct plant 
   }
 }
 
+/* ---- What was taken ---- */
+
+/* Unknowns up to which a balance is solved again to see what an alternative does to it.  */
+enum { AGAIN_MOST = 5000 };
+
+/* A balance and where its name was typed.  */
+struct solved { struct definition *balance; struct place at; };
+
+/* The flows that are fixed, as they are told and by mass.  */
+static void
+flows_of (struct evaluation *ev, const struct plant *plant, struct figures *figures)
+{
+  const char *unit;
+  const double per = plant_unit (ev, plant, &unit);
+  figures->at = ARENA_ARRAY (ev->arena, 2 * plant->stream_count, struct figure);
+  for (size_t s = 0; s < plant->stream_count; s++) {
+    if (!plant_is_fixed (plant, s)) {
+      continue;
+    }
+    figures->at[figures->count++].value = per * plant_total (plant, s);
+    if (!plant->whole) {
+      figures->at[figures->count++].value = plant_mass (plant, s);
+    }
+  }
+}
+
+static bool
+solve_again (struct evaluation *again, const void *with, struct figures *figures)
+{
+  const struct solved *solved = with;
+  const struct value *value = definition_value (again, solved->balance, solved->at);
+  if (!value || !value->plant->solution) {
+    return false;
+  }
+  flows_of (again, value->plant, figures);
+  return true;
+}
+
+static void
+tell_taken (struct evaluation *ev, const struct plant *plant, const struct solved *solved)
+{
+  struct figures figures = { NULL, 0, 0 };
+  if (network_columns (&plant->network) <= AGAIN_MOST
+      && plant->solution->status != BALANCE_CONTRADICTORY) {
+    flows_of (ev, plant, &figures);
+  }
+  if (figures.count > 0) {
+    retold_taken (ev, &(struct retold) { solve_again, solved }, &figures);
+    return;
+  }
+  for (size_t i = 0; i < ev->assumption_count; i++) {
+    const struct assumption *a = &ev->assumptions[i];
+    struct remark *remark = result_remark (ev->result, a->kind, a->fact[0], a->fact[1]);
+    remark->fact[2] = a->fact[2];
+    remark->fact[3] = a->fact[3];
+  }
+}
+
 bool
 command_solve (struct session *session, const struct statement *s, struct result *result,
                struct fault *fault)
@@ -110,12 +168,7 @@ command_solve (struct session *session, const struct statement *s, struct result
   }
   undo_group_close (session);
   balance_remember (session, d->name);
-  for (size_t i = 0; i < ev.assumption_count; i++) {
-    const struct assumption *a = &ev.assumptions[i];
-    struct remark *remark = result_remark (result, a->kind, a->fact[0], a->fact[1]);
-    remark->fact[2] = a->fact[2];
-    remark->fact[3] = a->fact[3];
-  }
+  tell_taken (&ev, plant, &(struct solved) { d, s->name ? s->name_at : s->at });
   for (size_t i = 0; i < ev.used_count; i++) {
     definition_tell (session, ev.used[i], false, result);
   }

@@ -108,7 +108,7 @@ other_of (struct arena *arena, const struct assumption *a, struct other *o)
 
 /* The largest relative change the alternative makes to any figure; UNSTATED: cannot be told.  */
 static double
-effect_of (const struct evaluation *ev, const struct statement *s, const struct figures *figures,
+effect_of (const struct evaluation *ev, const struct retold *told, const struct figures *figures,
            const struct other *other)
 {
   struct evaluation again;
@@ -119,7 +119,7 @@ effect_of (const struct evaluation *ev, const struct statement *s, const struct 
   evaluation_again (&again, ev, &fault);
   again.settings = &other->settings;
   again.overridden = other->overridden;
-  if (!question_again (&again, s, &others) || others.count != figures->count) {
+  if (!told->again (&again, told->with, &others) || others.count != figures->count) {
     return UNSTATED;
   }
   for (size_t i = 0; i < others.count; i++) {
@@ -135,13 +135,13 @@ effect_of (const struct evaluation *ev, const struct statement *s, const struct 
 
 /* Adds what was taken; false if it moves the figures by less than is to be listed.  */
 static bool
-tell_assumption (struct evaluation *ev, const struct statement *s, const struct figures *figures,
+tell_assumption (struct evaluation *ev, const struct retold *told, const struct figures *figures,
                  const struct assumption *a)
 {
   struct other other = { *ev->settings, 0, NULL };
   double effect = UNSTATED;
   if (other_of (ev->arena, a, &other)) {
-    effect = effect_of (ev, s, figures, &other);
+    effect = effect_of (ev, told, figures, &other);
     if (fabs (effect) < NO_EFFECT) {
       return true;
     }
@@ -263,13 +263,25 @@ asks_for_that (const struct node *node)
   return node && (node->kind == NODE_THAT || asks_for_that (node->a) || asks_for_that (node->b));
 }
 
+static bool
+ask_again (struct evaluation *again, const void *statement, struct figures *figures)
+{
+  return question_again (again, statement, figures);
+}
+
 void
 question_tell_taken (struct evaluation *ev, const struct statement *s,
                      const struct figures *figures)
 {
+  retold_taken (ev, &(struct retold) { ask_again, s }, figures);
+}
+
+void
+retold_taken (struct evaluation *ev, const struct retold *told, const struct figures *figures)
+{
   size_t hidden = 0;
   for (size_t i = 0; i < ev->assumption_count; i++) {
-    hidden += !tell_assumption (ev, s, figures, &ev->assumptions[i]);
+    hidden += !tell_assumption (ev, told, figures, &ev->assumptions[i]);
   }
   if (hidden > 0) {
     result_remark (ev->result, MESSAGE_NOTE_EFFECTS_HIDDEN,
