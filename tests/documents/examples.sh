@@ -123,7 +123,9 @@ tell "$(for quarrel in "$top"/tables/demo/quarrel_*.gw; do
   done 2>&1 | diff "$here/quarrels.golden" -)" "the quarrels at Larkmoor Works end in their verdicts"
 tell "$(for note in blower controller lpg permit; do
     grep -q 'Checked by' "$note.html" || echo "$note.html"
-  done)" "each files its note"
+  done
+  grep -q 'stands alone' blower.html || echo "no figure of the sheet in blower.html")" \
+  "each files its note"
 tell "$(for quarrel in quarrel_*.gw; do
     "$GASWRIGHT" "$quarrel" | awk -v name="$quarrel" '
       / READINGS? FITS? | HOLDS | NOTHING EXPLAINS IT / { lines = 0; seen = 1 } { lines++ }

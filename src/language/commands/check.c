@@ -10,6 +10,7 @@
 #include "language/evaluate/flow.h"
 #include "language/kept.h"
 #include "property/enhancement.h"
+#include "language/evaluate/wording.h"
 #include "result/check_verdict.h"
 #include "result/result.h"
 #include "support/arena.h"
@@ -78,6 +79,38 @@ tell_sheet (struct session *session, struct definition *d, const struct check_ve
   result_remark (result, MESSAGE_CAUTION_CUSTODY, NULL, NULL);
 }
 
+/* What a note shows of a sheet: every figure with what is computed for it, and the readings.  */
+static void
+keep_sheet (struct session *session, const struct statement *s, const struct evaluation *ev,
+            const struct result *result, const struct check_verdict *v)
+{
+  const struct value nothing = value_number (UNSTATED);
+  const char *how = v->readings ? "" : ", as written";
+  for (const struct check_reading *r = v->readings; r; r = r->next) {
+    how = arena_format (result->arena, "%s; %s", how, r->reading);
+  }
+  kept_add (session, &(struct asked) { ev, s, &nothing, NULL, 0 }, result);
+  kept_add_row (session, result, &(struct answer) {
+      .what = "figures that agree", .named = true, .value = (double) v->agreeing, .unit = "",
+      .uncertainty = UNSTATED, .coverage = 1,
+      .basis = arena_format (result->arena, "of %zu%s", v->figure_count, how) });
+  for (const struct check_figure *f = v->figures; f; f = f->next) {
+    const char *name = f->name ? f->name : f->stated;
+    const struct answer stated = {
+      .what = name, .named = true, .value = f->value, .unit = f->unit, .uncertainty = UNSTATED,
+      .coverage = 1, .basis = arena_format (result->arena, "stated; computed %s %s, %s",
+                                            figure_text (result->arena, f->computed), f->unit,
+                                            f->holds ? "agrees" : "stands alone") };
+    const struct step_symbol symbols[] = { CONSTANT ("s", f->value, f->unit, STEP_TYPED),
+                                           SYMBOL ("c", f->computed, f->unit) };
+    kept_add_row (session, result, &stated);
+    kept_extend (session, result, &(struct step) {
+        .name = arena_format (result->arena, "%s, stated less computed", name),
+        .formula = "d = s - c", .value = f->value - f->computed, .unit = f->unit,
+        .source = STEP_DEFINITION, .symbols = symbols, .symbol_count = 2 });
+  }
+}
+
 static bool
 check_sheet (struct session *session, const struct statement *s, struct result *result,
              struct fault *fault)
@@ -103,6 +136,7 @@ check_sheet (struct session *session, const struct statement *s, struct result *
   }
   tell_sheet (session, d, v, result);
   result->check = v;
+  keep_sheet (session, s, &ev, result, v);
   return true;
 }
 
