@@ -38,12 +38,27 @@ drop_end_zeros (struct text *figure)
     figure->bytes[--figure->length] = '\0';
 }
 
+/* 404.7 ± 3.5 */
+static void
+uncertain_add (struct text *out, const struct report_style *style, double value, double spread)
+{
+  struct text behind;
+  text_init (&behind);
+  figure_write_uncertain (out, value, &behind, spread);
+  text_add_char (out, ' ');
+  text_add (out, plus_minus (style));
+  text_add (out, behind.bytes);
+  text_clear (&behind);
+}
+
 static const char *
 cell_write (struct text *scratch, const struct report_style *style, const struct cell *cell)
 {
   text_empty (scratch);
   if (cell->text != NULL)
     shown_add (scratch, style, cell->text);
+  else if (cell->is_number && figure_is_uncertain (cell->value, cell->spread))
+    uncertain_add (scratch, style, cell->value, cell->spread);
   else if (cell->is_number) {
     figure_write (scratch, style, cell->value);
     if (cell->recorded)

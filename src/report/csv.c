@@ -162,7 +162,11 @@ cell_add (struct frame *frame, const char *what, const char *heading, const stru
   else
     next_number (frame->out, cell->value);
   next_field (frame->out, unit);
-  text_add (frame->out, ",,,");
+  if (cell->text == NULL && figure_is_uncertain (cell->value, cell->spread))
+    next_number (frame->out, cell->spread);
+  else
+    text_add_char (frame->out, ',');
+  text_add (frame->out, ",,");
   row_close (frame);
 }
 

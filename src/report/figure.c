@@ -53,7 +53,7 @@ figure_is_uncertain (double value, double uncertainty)
 size_t
 figure_whole (const char *figure)
 {
-  return strcspn (figure, ".eE");
+  return strcspn (figure, ".eE ");
 }
 
 /* Power of ten of the first digit.  */

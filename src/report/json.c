@@ -188,6 +188,21 @@ cell_add (struct text *out, const struct cell *cell)
     json_figure (out, "", cell->is_number ? cell->value : (double) NAN);
 }
 
+/* The uncertainties of a row, where it has any.  */
+static void
+spreads_add (struct text *out, const struct card *card, const struct card_row *row)
+{
+  bool any = false;
+  for (size_t i = 0; i < card->columns; i++)
+    any = any || figure_is_uncertain (row->cells[i].value, row->cells[i].spread);
+  for (size_t i = 0; any && i < card->columns; i++) {
+    const struct cell *cell = &row->cells[i];
+    json_figure (out, i > 0 ? "," : ",\"uncertainties\":[",
+                 figure_is_uncertain (cell->value, cell->spread) ? cell->spread : (double) NAN);
+  }
+  text_add (out, any ? "]" : "");
+}
+
 static void
 card_add (struct text *out, const struct card *card)
 {
@@ -204,7 +219,9 @@ card_add (struct text *out, const struct card *card)
       text_add (out, i > 0 ? "," : "");
       cell_add (out, &r->cells[i]);
     }
-    text_add (out, r->next != NULL ? "]}," : "]}");
+    text_add_char (out, ']');
+    spreads_add (out, card, r);
+    text_add (out, r->next != NULL ? "}," : "}");
   }
   text_add (out, "],\"lines\":[");
   for (const struct card_line *l = card->lines; l != NULL; l = l->next) {

@@ -17,9 +17,7 @@ struct verdict_stream {
   double molar_flow, mass_flow, uncertainty;     /* mol/s, kg/s, mol/s; NAN: open */
   const double *fractions;                       /* by component; NAN: open */
   const double *fractions_u;
-  const double *shown;                           /* flows in the units of `units` */
-  double shown_u;                                /* of the first of these */
-  double stated_u;
+  const double *shown, *shown_u;                 /* flows in the units of `units`; NAN: certain */
 };
 
 /* One row of text with cells; `number` is that of a user's line, 0 of none.  */
@@ -44,6 +42,7 @@ struct balance_verdict {
   bool mass;                                     /* flows are by mass: molar_flow is NAN */
   size_t component_count; const char *const *components;
   size_t unit_count; const char *const *units;   /* columns of `shown` */
+  const char *const *unit_basis;                 /* what they stand on, or null; as null in it */
   size_t stream_count; const struct verdict_stream *streams;
 
   struct verdict_row *facts;                     /* label, text: "fixed all the same ..." */

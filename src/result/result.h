@@ -54,7 +54,8 @@ struct remark {
 /* A card: one thing with all its figures.  */
 /* Text wins; neither: blank.  A `recorded` figure is one of a table: shown without the zeros that
    would claim digits it does not have.                                                          */
-struct cell { const char *text; double value; bool is_number, recorded; };
+/* SPREAD: standard uncertainty of a number, shown behind it and deciding its digits; 0: none.  */
+struct cell { const char *text; double value, spread; bool is_number, recorded; };
 struct card_row { const char *name; const struct cell *cells; struct card_row *next; };
 struct card_line { const char *text; struct card_line *next; };
 struct card {

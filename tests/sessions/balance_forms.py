@@ -262,6 +262,42 @@ def nothing_there(tap):
              "what is said to be nothing is a suspect all the same")
 
 
+def spreads(tap):
+    """The table of streams: uncertainties of whole flows in any unit, worked out by hand.
+
+    Two gases known by amount with independent uncertainties make a blend.  The variance of its
+    flow in a unit that counts w per mole of methane and v per mole of carbon dioxide is
+    (w u1)^2 + (v u2)^2, whatever the unit."""
+    u1, u2 = 2.0, 1.5
+    text = "set gas model ideal\n" + block(
+        "mix unit: a + b = c",
+        "known a = 100 +/- 2 kmol/h of CH4",
+        "known b = 50 +/- 1.5 kmol/h of CO2",
+        solve="solve case in kmol/h, kg/h, Nm3/h, MW gross, m3/h at 20 degC, 2 bar(a)")
+    card = session.answers(text)[-1]["card"]
+    row = {row["name"]: row for row in card["rows"]}["c"]
+    molar = math.hypot(u1, u2)
+    wobble = (100 * u2 / 150 ** 2, 50 * u1 / 150 ** 2)
+    heat = session.answers("set gas model ideal\n1 kmol/h of CH4 in MW gross")[0]["answers"][0]
+    want = [molar, math.hypot(u1 * M["CH4"], u2 * M["CO2"]),
+            molar * R * 273.15 / 101.325, u1 * heat["value"],
+            molar * R * 293.15 / 200, 100 * math.hypot(*wobble), 100 * math.hypot(*wobble)]
+    wrong = [session.off(got, value, 3e-5) for got, value in zip(row["uncertainties"], want)]
+    tap.tell([line for line in wrong if line], "uncertainties in every unit asked for")
+    said = session.run(text, "text")[1]
+    tap.tell([] if "150.0 ± 2.5" in said or "150.0 +/- 2.5" in said else [said],
+             "a flow is rounded by its uncertainty")
+    tap.tell([line for line in ("Nm3/h: 0 degC, 101.325 kPa, ideal-gas volume",
+                                "MW gross: gross, combustion 15 degC",
+                                "taken: combustion at 15 degC") if line not in said],
+             "what flows asked for stand on is said")
+    wide = session.run("\n".join([
+        "balance wide", "mix unit: in-a + in-b = out", "known in-a = 10 ± 1 Nm3/h of air",
+        "known in-b = 20 ± 1 Nm3/h of air", "end", "solve wide", ""]), "text")[1]
+    tap.tell([line for line in wide.splitlines() if " .." in line and len(line) > 100],
+             "a table too wide for a line is parted")
+
+
 def main():
     tap = session.Tap()
     forms(tap)
@@ -272,6 +308,7 @@ def main():
     blocks(tap)
     cards(tap)
     cautions(tap)
+    spreads(tap)
     return tap.finish()
 
 

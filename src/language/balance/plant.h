@@ -85,7 +85,11 @@ bool plant_stream_value (struct evaluation *, const struct plant *, const char *
 /* The unit in which molar (or whole) flows are told: figure = mol/s * per.  */
 double plant_unit (struct evaluation *, const struct plant *, const char **unit);
 
-struct balance_verdict;
+struct balance_verdict; struct figures;
+/* The first stream that is fixed, in each of TARGETS (null: none), with what that takes: added to
+   FIGURES, as many at each call.                                                                */
+bool plant_flows_told (struct evaluation *, const struct plant *, const struct target *,
+                       struct figures *) MUST_CHECK;
 /* The verdict of a solved plant, streams told in TARGETS (null: as typed).  */
 const struct balance_verdict *plant_verdict (struct evaluation *, const struct plant *,
                                              const struct target *) MUST_CHECK;

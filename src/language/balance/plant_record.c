@@ -157,7 +157,7 @@ rows_of (struct arena *arena, const struct balance_verdict *v, size_t *count)
     struct answer *a = row_add (&rows, s->name, parts_text (arena, v, s));
     a->value = s->shown[0];
     a->unit = v->units[0];
-    a->uncertainty = s->shown_u;
+    a->uncertainty = s->shown_u[0];
   }
   *count = rows.count;
   return rows.first;

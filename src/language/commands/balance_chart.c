@@ -71,8 +71,8 @@ flow_text (struct arena *arena, const struct balance_verdict *v, size_t s, bool 
     if (isnan (stream->shown[u])) {
       continue;
     }
-    const char *figure = u == 0 && stream->shown_u > 0
-                           ? uncertain_text (arena, stream->shown[u], stream->shown_u)
+    const char *figure = stream->shown_u[u] > 0
+                           ? uncertain_text (arena, stream->shown[u], stream->shown_u[u])
                            : chart_figure (arena, stream->shown[u]);
     text = arena_format (arena, "%s%s%s %s", text ? text : "", text ? ", " : "", figure,
                          v->units[u]);
@@ -127,7 +127,7 @@ basis_text (const struct evaluation *ev, const struct plant *plant,
 {
   bool spread = false;
   for (size_t s = 0; s < v->stream_count; s++) {
-    spread = spread || v->streams[s].shown_u > 0;
+    spread = spread || (v->unit_count > 0 && v->streams[s].shown_u[0] > 0);
   }
   const char *flows = targets ? chart_units (ev, targets)
                       : plant->unit && strcmp (v->units[0], plant->unit_text) == 0

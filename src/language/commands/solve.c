@@ -90,8 +90,8 @@ make_stream (struct session *session, struct evaluation *ev, const struct plant 
 /* Unknowns up to which a balance is solved again to see what an alternative does to it.  */
 enum { AGAIN_MOST = 5000 };
 
-/* A balance and where its name was typed.  */
-struct solved { struct definition *balance; struct place at; };
+/* A balance, where its name was typed, and in what its flows are to be told.  */
+struct solved { struct definition *balance; struct place at; const struct target *targets; };
 
 /* The flows that are fixed, as they are told and by mass.  */
 static void
@@ -99,7 +99,8 @@ flows_of (struct evaluation *ev, const struct plant *plant, struct figures *figu
 {
   const char *unit;
   const double per = plant_unit (ev, plant, &unit);
-  figures->at = ARENA_ARRAY (ev->arena, 2 * plant->stream_count, struct figure);
+  figures->room = 2 * plant->stream_count;
+  figures->at = ARENA_ARRAY (ev->arena, figures->room, struct figure);
   for (size_t s = 0; s < plant->stream_count; s++) {
     if (!plant_is_fixed (plant, s)) {
       continue;
@@ -120,7 +121,7 @@ solve_again (struct evaluation *again, const void *with, struct figures *figures
     return false;
   }
   flows_of (again, value->plant, figures);
-  return true;
+  return plant_flows_told (again, value->plant, solved->targets, figures);
 }
 
 static void
@@ -130,6 +131,9 @@ tell_taken (struct evaluation *ev, const struct plant *plant, const struct solve
   if (network_columns (&plant->network) <= AGAIN_MOST
       && plant->solution->status != BALANCE_CONTRADICTORY) {
     flows_of (ev, plant, &figures);
+    if (!plant_flows_told (ev, plant, solved->targets, &figures)) {
+      figures.count = 0;
+    }
   }
   if (figures.count > 0) {
     retold_taken (ev, &(struct retold) { solve_again, solved }, &figures);
@@ -168,7 +172,7 @@ command_solve (struct session *session, const struct statement *s, struct result
   }
   undo_group_close (session);
   balance_remember (session, d->name);
-  tell_taken (&ev, plant, &(struct solved) { d, s->name ? s->name_at : s->at });
+  tell_taken (&ev, plant, &(struct solved) { d, s->name ? s->name_at : s->at, s->targets });
   for (size_t i = 0; i < ev.used_count; i++) {
     definition_tell (session, ev.used[i], false, result);
   }
