@@ -167,13 +167,31 @@ name_unknown (struct evaluation *ev, const struct node *node)
 
 /* ---- Defining ---- */
 
+/* Has a balance a boundary of its own name?  That stands behind `in`, and is no mention of it.  */
+static bool
+is_boundary_too (const struct statement *balance)
+{
+  for (const struct statement *line = balance->next; line; line = line->next)
+    if (line->inlets && line->name && strcmp (line->name, balance->name) == 0) {
+      return true;
+    }
+  return false;
+}
+
 /* Refuses a definition that would depend on itself; FROM holds its trees.  */
 static bool
 not_circular (struct session *s, const struct statement *from, struct fault *fault)
 {
   const struct node *own = tree_mention (from, from->name);
   bool gas = from->kind == STATEMENT_GAS;
-  if (own) {
+  const bool balance = from->kind == STATEMENT_BALANCE;
+  if (own && balance && !is_boundary_too (from)) {
+    return fault_set_at (fault, MESSAGE_KIND_WRONG, own->at,
+                         arena_format (fault->arena, "'%s' is what the balance is called",
+                                       from->name),
+                         "give the stream or the balance a name of its own");
+  }
+  if (own && !balance) {
     if (!known (s, from->name, strlen (from->name))) {
       fault_set_at (fault, MESSAGE_NAME_UNKNOWN, own->at, own->text,
                     "a name is defined before it is used");

@@ -121,6 +121,11 @@ meaning_of (struct reader_state *r, struct plant_stream *stream)
 {
   struct evaluation *ev = r->ev;
   struct definition *d = name_find (ev->session, stream->name, strlen (stream->name));
+  if (strcmp (stream->name, r->plant->name) == 0) {
+    return wrong (r, stream->at, arena_format (ev->arena, "'%s' is what the balance is called",
+                                               stream->name),
+                  "give the stream or the balance a name of its own");
+  }
   if (!d || (d->maker && strcmp (d->maker, r->plant->name) == 0)) {
     return true;
   }
