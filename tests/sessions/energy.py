@@ -66,6 +66,8 @@ SAYS = (
      "part may be liquid"),
     ("", "density of C3H8 at 20 degC, 8 bar(a)", "no notes", "liquid"),
     ("", "viscosity of CH4 at 15 degC, 1 bar(a)", "basis", "low pressure"),
+    ("", "viscosity of CH4 at 15 degC, 40 bar(a)", "notes", "at 40 bar(a) the true one is higher"),
+    ("", "viscosity of CH4 at 15 degC, 5 bar(a)", "no notes", "the true one"),
     ("gas a = CH4 60, CO2 40 mol%", "viscosity of a at 15 degC, 1 bar(a)", "basis",
      "Wilke"),
     ("", "lower flammable limit of CH4", "basis", "Le Chatelier"),

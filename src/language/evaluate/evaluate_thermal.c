@@ -161,6 +161,9 @@ property_caloric (struct evaluation *ev, const struct property_question *q, stru
 
 /* ---- Viscosity ---- */
 
+/* Above this the density of a gas raises its viscosity by more than the mixing rule is good to.  */
+#define LOW_PRESSURE 1e6
+
 bool
 property_viscosity (struct evaluation *ev, const struct property_question *q, struct value *out)
 {
@@ -175,6 +178,9 @@ property_viscosity (struct evaluation *ev, const struct property_question *q, st
   }
   if (v.outside) {
     note (ev, MESSAGE_NOTE_BEYOND_RANGE, "viscosity", v.outside->key, NULL);
+  }
+  if (q->p > LOW_PRESSURE) {
+    note (ev, MESSAGE_NOTE_LOW_PRESSURE, pressure_text (ev->arena, q->p, false), NULL, NULL);
   }
   if (ev->describe) {
     out->basis = arena_format (ev->arena, "%s, low pressure%s",
