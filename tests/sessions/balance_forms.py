@@ -287,6 +287,12 @@ def spreads(tap):
     said = session.run(text, "text")[1]
     tap.tell([] if "150.0 ± 2.5" in said or "150.0 +/- 2.5" in said else [said],
              "a flow is rounded by its uncertainty")
+    even = session.run(block(
+        "mix unit: a + b = c", "separate other: c = d + e", "known a = 100 kg/h of CH4",
+        "known b = 50 kg/h of CH4", "known c = 151 ± 2 kg/h", "known d = 80 kg/h",
+        "known e = 70 kg/h", "around unit, other"), "text")[1]
+    tap.tell([] if "in, 9.35 out, 0 kmol/h apart" in re.sub(r"(9\.3)\d+", r"\g<1>5", even)
+             else [even], "an envelope that closes is nothing apart")
     tap.tell([line for line in ("Nm3/h: 0 degC, 101.325 kPa, ideal-gas volume",
                                 "MW gross: gross, combustion 15 degC",
                                 "taken: combustion at 15 degC") if line not in said],

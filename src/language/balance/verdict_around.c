@@ -4,61 +4,69 @@
 #include "language/balance/verdict_private.h"
 
 #include <math.h>
-#include <string.h>
 #include "support/arena.h"
+#include "support/fault.h"
 
-/* Is the form one of a single whole stream, counted by amount?  */
+/* Does a form speak of stream S alone?  */
 static bool
-is_total (const struct plant *plant, const struct form *form, size_t s)
+is_within (const struct plant *plant, const struct form *form, size_t s)
 {
-  size_t n = plant->network.components, parts = 0;
-  for (size_t c = 0; c < n; c++) {
-    parts += plant->network.possible[plant_column (plant, s, c)] ? 1 : 0;
-  }
   for (size_t i = 0; i < form->count; i++)
-    if (form->terms[i].column / n != s || fabs (form->terms[i].coefficient - 1) > 1e-12) {
+    if (form->terms[i].column / plant->network.components != s) {
       return false;
     }
-  return form->count == parts;
+  return true;
 }
 
-/* The stated flow of each component of a stream into FLOW, NAN where it was not stated; one share
-   that is missing is what the others leave.                                                     */
+static bool
+is_about (const struct plant *plant, const struct fact *fact, size_t s)
+{
+  switch (fact->kind) {
+  case FACT_FORM: return is_within (plant, &fact->left, s);
+  case FACT_RATIO: return is_within (plant, &fact->left, s) && is_within (plant, &fact->right, s);
+  case FACT_COMPOSITION: return fact->stream == s;
+  case FACT_SHARE: break;
+  }
+  return false;
+}
+
+/* A form of stream S as one of the only stream there is.  */
+static struct form
+form_alone (struct arena *arena, const struct form *form, size_t first)
+{
+  struct term *terms = ARENA_ARRAY (arena, form->count + 1, struct term);
+  for (size_t i = 0; i < form->count; i++) {
+    terms[i] = (struct term) { form->terms[i].column - first, form->terms[i].coefficient };
+  }
+  return (struct form) { form->count, terms };
+}
+
+/* What follows for a stream from the facts about it alone: a network of one stream and no
+   boundary.  The flow of each component into FLOW, NAN where they leave it open or clash.       */
 static void
 stated_flows (const struct verdict_maker *m, size_t s, double flow[])
 {
-  const struct plant *plant = m->plant;
-  size_t n = plant->network.components, open = 0, last = 0;
-  double total = UNSTATED, sum = 0;
-  for (size_t c = 0; c < n; c++) {
-    flow[c] = plant->network.possible[plant_column (plant, s, c)] ? UNSTATED : 0;
-  }
-  for (size_t f = 0; f < plant->fact_count; f++) {
-    const struct fact *fact = &plant->network.fact[f];
-    if (plant->fact[f].stream != s) {
-      continue;
+  const struct network *whole = &m->plant->network;
+  const struct solve_options options = { 0.95, NULL };
+  size_t n = whole->components;
+  struct fault unheard;
+  struct fact *facts = ARENA_ARRAY (m->arena, whole->facts + 1, struct fact);
+  struct network alone = { .components = n, .streams = 1, .possible = whole->possible + s * n,
+                           .molar_mass = whole->molar_mass, .fact = facts,
+                           .water = whole->water };
+  for (size_t f = 0; f < whole->facts; f++)
+    if (is_about (m->plant, &whole->fact[f], s)) {
+      struct fact *fact = &facts[alone.facts++];
+      *fact = whole->fact[f];
+      fact->left = form_alone (m->arena, &fact->left, s * n);
+      fact->right = form_alone (m->arena, &fact->right, s * n);
+      fact->stream = 0;
     }
-    if (fact->kind == FACT_FORM && is_total (plant, &fact->left, s)) {
-      total = fact->value;
-    } else if (fact->kind == FACT_COMPOSITION) {
-      memcpy (flow, fact->fractions, n * sizeof *flow);
-    } else if (fact->kind == FACT_RATIO && fact->left.count == 1
-               && fact->left.terms[0].column / n == s
-               && fabs (fact->left.terms[0].coefficient - 1) < 1e-12
-               && is_total (plant, &fact->right, s)) {
-      flow[fact->left.terms[0].column % n] = fact->value;
-    }
-  }
+  fault_init (&unheard, m->arena);
+  const struct solution *solution = network_solve (m->arena, &alone, &options, &unheard);
+  const bool holds = solution && solution->status != BALANCE_CONTRADICTORY;
   for (size_t c = 0; c < n; c++) {
-    open += isnan (flow[c]) ? 1 : 0;
-    last = isnan (flow[c]) ? c : last;
-    sum += isnan (flow[c]) ? 0 : flow[c];
-  }
-  if (open == 1) {
-    flow[last] = 1 - sum;
-  }
-  for (size_t c = 0; c < n; c++) {
-    flow[c] *= total;
+    flow[c] = holds && solution->fixed[c] ? solution->value[c] : UNSTATED;
   }
 }
 
@@ -71,6 +79,9 @@ tell_component (struct verdict_maker *m, const char *label, size_t c, const doub
     return;
   }
   double gap = (sum[0] - sum[1]) * m->per;
+  if (fabs (gap) < 1e-12 * fabs (sum[0] * m->per)) {
+    gap = 0;                            /* what subtraction leaves of nothing */
+  }
   verdict_fact (m, label, arena_format (m->arena, "%s: %s in, %s out, %s %s apart", name,
                                         figure_text (m->arena, sum[0] * m->per),
                                         figure_text (m->arena, sum[1] * m->per),
