@@ -2,7 +2,6 @@
 #include "language/session_private.h"
 
 #include <errno.h>
-#include <stdio.h>
 #include <string.h>
 #include <sys/stat.h>
 #include "gas/laboratory.h"
@@ -11,6 +10,7 @@
 #include "support/arena.h"
 #include "support/csv.h"
 #include "support/fault.h"
+#include "support/infile.h"
 #include "support/text.h"
 
 /* What is kept of a file once its analyses were read.  */
@@ -34,20 +34,7 @@ file_reason (int error)
 bool
 file_bytes (const char *path, struct text *text)
 {
-  char block[1 << 16];
-  size_t n;
-  FILE *file = fopen (path, "r");
-  if (!file) {
-    return false;
-  }
-  while (text->length <= FILE_MOST && (n = fread (block, 1, sizeof block, file)) > 0) {
-    text_add_bytes (text, block, n);
-  }
-  int reason = text->length > FILE_MOST ? EFBIG : errno;
-  bool done = text->length <= FILE_MOST && !ferror (file);
-  (void) fclose (file);
-  errno = reason;
-  return done;
+  return infile_read (&(struct infile) { .name = path, .most = FILE_MOST }, text);
 }
 
 static void

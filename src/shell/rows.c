@@ -2,7 +2,7 @@
 #include "shell/rows.h"
 
 #include <errno.h>
-#include <stdio.h>
+#include <stdint.h>
 #include <string.h>
 
 #include "shell/descriptor.h"
@@ -12,6 +12,7 @@
 #include "support/arena.h"
 #include "support/csv.h"
 #include "support/fault.h"
+#include "support/infile.h"
 #include "support/number.h"
 #include "support/reader.h"
 
@@ -63,25 +64,6 @@ number_of (const struct csv *csv, const struct csv_cell *cell, double *value)
     return false;
   *value = digits[0] == '-' ? -*value : *value;
   return true;
-}
-
-static bool
-read_file (const char *name, struct text *bytes)
-{
-  char block[1 << 16];
-  const bool standard = strcmp (name, "-") == 0;
-  FILE *file = standard ? stdin : fopen (name, "r");
-
-  if (file == NULL)
-    return false;
-  for (size_t n; !interrupt_pending () && (n = fread (block, 1, sizeof block, file)) > 0;)
-    text_add_bytes (bytes, block, n);
-  const bool good = !ferror (file);
-  const int reason = errno;
-  if (!standard)
-    (void) fclose (file);
-  errno = reason;
-  return good;
 }
 
 /* The names, and which columns hold numbers.  */
@@ -222,7 +204,8 @@ rows_run (struct script *script, const char *name, const struct text *statements
 
   text_init (&bytes);
   fault_init (&fault, rows.arena);
-  if (!read_file (name, &bytes)) {
+  if (!infile_read (&(struct infile) { .name = name, .standard = true, .most = SIZE_MAX,
+                                       .stop = interrupt_pending }, &bytes)) {
     output_file_fault (script->output, name, descriptor_reason (errno));
     script->failed = true;
   } else {

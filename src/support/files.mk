@@ -13,6 +13,8 @@ noinst_LIBRARIES += %D%/libsupport.a
   %D%/draw.h \
   %D%/fault.c \
   %D%/fault.h \
+  %D%/infile.c \
+  %D%/infile.h \
   %D%/map.c \
   %D%/map.h \
   %D%/memory.c \
@@ -39,7 +41,8 @@ noinst_LIBRARIES += %D%/libsupport.a
   %D%/table.h \
   %D%/text.c \
   %D%/text.h \
-  %D%/utf8.c
+  %D%/utf8.c \
+  %D%/vector.h
 
 nodist_%C%_libsupport_a_SOURCES = \
   made/message_kinds.h \

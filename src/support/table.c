@@ -5,10 +5,10 @@
 #include <errno.h>
 #include <math.h>
 #include <stdint.h>
-#include <stdio.h>
 #include <string.h>
 #include "support/arena.h"
 #include "support/fault.h"
+#include "support/infile.h"
 #include "support/number.h"
 #include "support/text.h"
 
@@ -264,47 +264,26 @@ read_users_rows (struct table *table, struct users_text *users, struct fault *fa
   return true;
 }
 
-/* The whole of an open file as text in ARENA, behind its byte-order mark; null if it cannot be
-   read.                                                                                        */
-static char *
-read_file (struct arena *arena, FILE *file, char **end)
-{
-  static const char mark[] = "\xEF\xBB\xBF";
-  struct text read;
-  char block[16 * 1024];
-  char *bytes = NULL;
-  size_t n;
-
-  text_init (&read);
-  while ((n = fread (block, 1, sizeof block, file)) > 0)
-    text_add_bytes (&read, block, n);
-  if (!ferror (file)) {
-    bytes = arena_copy (arena, read.bytes, read.length);
-    *end = bytes + read.length;
-    if (strncmp (bytes, mark, sizeof mark - 1) == 0)
-      bytes += sizeof mark - 1;
-  }
-  text_clear (&read);
-  return bytes;
-}
-
 /* True, with a null path in USERS, if there is no such file.  */
 static bool
 open_users (struct arena *arena, const char *path, struct users_text *users, struct fault *fault)
 {
-  FILE *file = fopen (path, "r");
+  static const char mark[] = "\xEF\xBB\xBF";
+  struct text read;
 
   *users = (struct users_text) { 0 };
-  if (file == NULL && errno == ENOENT)
-    return true;
-  if (file == NULL)
-    return fault_set (fault, MESSAGE_FILE, path, strerror (errno));
-  users->next = read_file (arena, file, &users->end);
-  if (users->next == NULL)
-    fault_set (fault, MESSAGE_FILE, path, strerror (errno));
-  fclose (file);
-  users->path = path;
-  return users->next != NULL;
+  text_init (&read);
+  const bool good = infile_read (&(struct infile) { .name = path, .most = SIZE_MAX }, &read);
+  const int reason = errno;
+  if (good) {
+    users->path = path;
+    users->next = arena_copy (arena, read.length > 0 ? read.bytes : "", read.length);
+    users->end = users->next + read.length;
+    if (strncmp (users->next, mark, sizeof mark - 1) == 0)
+      users->next += sizeof mark - 1;
+  }
+  text_clear (&read);
+  return good || reason == ENOENT || fault_set (fault, MESSAGE_FILE, path, strerror (reason));
 }
 
 static size_t
