@@ -6,6 +6,7 @@
 #include "balance/program.h"
 #include "balance/reduce.h"
 #include "support/arena.h"
+#include "support/vector.h"
 
 /* A form whose change along the null space is less than this part of its norm is fixed.  */
 static const double moves_not = 1e-8;
@@ -26,16 +27,6 @@ struct work {
   struct program *program;       /* null: nothing is open */
   bool feasible;
 };
-
-static double
-norm (size_t n, const double x[])
-{
-  double sum = 0;
-  for (size_t i = 0; i < n; i++) {
-    sum += x[i] * x[i];
-  }
-  return sqrt (sum);
-}
 
 /* Adds FACTOR times the row of column J to G, and to the square SIZE of the gradient's norm.  */
 static void
@@ -106,14 +97,14 @@ classify_by_algebra (struct work *work)
   double *g = ARENA_ARRAY (core->arena, core->freedom + 1, double);
   for (size_t j = 0; j < work->columns; j++) {
     const double *row = &core->null[j * core->freedom];
-    work->fixed[j] = norm (core->freedom, row) <= moves_not;
+    work->fixed[j] = vector_norm (core->freedom, row) <= moves_not;
     work->value[j] = core->system->absence.absent[j] ? 0 : core->v[j];
     work->unit = j < work->flows ? fmax (work->unit, fabs (work->value[j])) : work->unit;
   }
   for (size_t s = 0; s < work->network->streams; s++) {
     struct quantity total = { QUANTITY_TOTAL, s, 0 };
     double size = quantity_reach (core, &total, core->v, g);
-    work->fixed_total[s] = norm (core->freedom, g) <= moves_not * size;
+    work->fixed_total[s] = vector_norm (core->freedom, g) <= moves_not * size;
   }
 }
 

@@ -6,6 +6,7 @@
 #include "balance/fixed.h"
 #include "balance/rank.h"
 #include "support/arena.h"
+#include "support/vector.h"
 
 /* Below this part of its norm a gradient does not move along the null space.  */
 static const double moves_not = 1e-8;
@@ -33,29 +34,19 @@ struct work {
   size_t chosen, *choice;        /* the set */
 };
 
-static double
-dot (size_t n, const double a[], const double b[])
-{
-  double sum = 0;
-  for (size_t k = 0; k < n; k++) {
-    sum += a[k] * b[k];
-  }
-  return sum;
-}
-
 static void
 consider (struct work *work, struct quantity quantity)
 {
   struct candidate *candidate = &work->candidates[work->count];
   double *g = ARENA_ARRAY (work->arena, work->width, double);
   double size = quantity_reach (work->core, &quantity, work->solution->value, g);
-  double worth = size > 0 ? sqrt (dot (work->width, g, g)) / size : 0;
+  double worth = size > 0 ? vector_norm (work->width, g) / size : 0;
   if (worth > moves_not) {
     for (size_t k = 0; k < work->width; k++) {
       g[k] /= size;
     }
     *candidate = (struct candidate) { quantity, g, NULL, 1, worth };
-    candidate->length = sqrt (dot (work->width, g, g));
+    candidate->length = vector_norm (work->width, g);
     candidate->along = ARENA_ARRAY (work->arena, work->width + 1, double);
     work->count++;
   }
@@ -101,13 +92,13 @@ clear (struct work *work, size_t m, const double best[])
 {
   for (size_t i = 0; i < work->count; i++) {
     struct candidate *candidate = &work->candidates[i];
-    double along = dot (work->width, best, candidate->g);
+    double along = vector_dot (work->width, best, candidate->g);
     if (fabs (along) > nothing) {
       candidate->along[m] = along;
       for (size_t k = 0; k < work->width; k++) {
         candidate->g[k] -= along * best[k];
       }
-      candidate->length = sqrt (dot (work->width, candidate->g, candidate->g));
+      candidate->length = vector_norm (work->width, candidate->g);
     }
   }
 }
@@ -141,12 +132,12 @@ direction (const struct work *work, size_t found, double *const chosen[])
   double *best = ARENA_ARRAY (work->arena, width, double), length;
   memcpy (best, work->candidates[found].g, width * sizeof *best);
   for (size_t m = 0; m < work->chosen; m++) {
-    double along = dot (width, chosen[m], best);
+    double along = vector_dot (width, chosen[m], best);
     for (size_t k = 0; k < width; k++) {
       best[k] -= along * chosen[m][k];
     }
   }
-  length = sqrt (dot (width, best, best));
+  length = vector_norm (width, best);
   for (size_t k = 0; k < width; k++) {
     best[k] /= length;
   }
@@ -308,7 +299,7 @@ relate (struct work *work, size_t s, size_t free_count, const size_t free[],
   space = space_make (arena, work->width, free_count, a);
   space_solve (arena, &space, g, factor);
   for (size_t k = 0; k < work->width; k++) {
-    out = fmax (out, fabs (g[k] - dot (free_count, &a[k * free_count], factor)));
+    out = fmax (out, fabs (g[k] - vector_dot (free_count, &a[k * free_count], factor)));
   }
   if (out > moves_not * size) {
     return false;

@@ -8,6 +8,7 @@
 #include "balance/factor.h"
 #include "balance/solution.h"
 #include "support/arena.h"
+#include "support/vector.h"
 
 struct covariance {
   const struct measured *measured;       /* its numbers only; the network is the caller's */
@@ -38,16 +39,6 @@ open_move (struct arena *arena, const struct measured *measured, const struct fi
   return move;
 }
 
-static double
-norm_of (const double x[], size_t n)
-{
-  double sum = 0;
-  for (size_t i = 0; i < n; i++) {
-    sum += x[i] * x[i];
-  }
-  return sqrt (sum);
-}
-
 bool *
 fit_open (struct arena *arena, const struct measured *measured, const struct fit *fit)
 {
@@ -55,7 +46,7 @@ fit_open (struct arena *arena, const struct measured *measured, const struct fit
   bool *open = ARENA_ARRAY (arena, columns, bool);
   for (unsigned seed = 1; seed <= MOVES; seed++) {
     double *move = open_move (arena, measured, fit, seed);
-    double zero = move ? FACTOR_SETTLED * norm_of (move, measured->places) : 0;
+    double zero = move ? FACTOR_SETTLED * vector_norm (measured->places, move) : 0;
     for (size_t j = 0; move && j < columns; j++) {
       open[j] = open[j] || fabs (move[j]) > zero;
     }
@@ -70,7 +61,7 @@ fit_open_streams (struct arena *arena, const struct measured *measured, const st
   size_t parts = measured->network->components, streams = measured->network->streams;
   for (unsigned seed = 1; seed <= MOVES; seed++) {
     double *move = open_move (arena, measured, fit, seed);
-    double zero = move ? FACTOR_SETTLED * norm_of (move, measured->places) : 0;
+    double zero = move ? FACTOR_SETTLED * vector_norm (measured->places, move) : 0;
     for (size_t s = 0; move && s < streams; s++) {
       double moved = system_total (measured->system, move, s);
       double flow = system_total (measured->system, fit->v, s);
@@ -122,7 +113,7 @@ solution_uncertainty (const struct solution *solution, const struct network *net
     figure_gradient (covariance->measured, &figure, covariance->v, 1, f);
   }
   if (!nothing && factor_spread (covariance->factor, scratch, f, spread)) {
-    u = norm_of (spread, places);
+    u = vector_norm (places, spread);
   }
   arena_destroy (scratch);
   return u;

@@ -7,6 +7,7 @@
 #include <math.h>
 #include <string.h>
 #include "support/arena.h"
+#include "support/vector.h"
 
 /* The dual method of Goldfarb and Idnani, Mathematical Programming 27 (1983) 1-33, section 3:
    from the free least value, the row missed most is taken in, dropping those in the way, until
@@ -35,16 +36,6 @@ row_of (const struct dual *s, size_t i)
   return s->q->a + i * s->n;
 }
 
-static double
-dot (size_t n, const double a[], const double b[])
-{
-  double sum = 0;
-  for (size_t k = 0; k < n; k++) {
-    sum += a[k] * b[k];
-  }
-  return sum;
-}
-
 static bool
 is_active (const struct dual *s, size_t i)
 {
@@ -62,7 +53,7 @@ row_missed (struct dual *s, size_t i, const double d[])
   if (is_active (s, i) || !(s->norm[i] > 0)) {
     return 0;
   }
-  double off = (dot (s->n, row_of (s, i), d) - s->q->b[i]) / s->norm[i];
+  double off = (vector_dot (s->n, row_of (s, i), d) - s->q->b[i]) / s->norm[i];
   s->sign[i] = i < s->q->equalities && off > 0 ? -1 : 1;
   double missed = -s->sign[i] * off;
   return missed > ROW_MET * fmax (1, fabs (s->q->b[i]) / s->norm[i]) ? missed : 0;
@@ -108,7 +99,7 @@ steps_for (struct dual *s, size_t i)
     }
   }
   whiten (s, i, s->w);
-  double whole = sqrt (dot (n, s->w, s->w));
+  double whole = vector_norm (n, s->w);
   memcpy (s->z, s->w, n * sizeof *s->z);
   gsl_vector_view z = gsl_vector_view_array (s->z, n);
   if (q > 0) {
@@ -122,7 +113,7 @@ steps_for (struct dual *s, size_t i)
     memset (s->z, 0, q * sizeof *s->z);
     gsl_linalg_QR_Qvec (&B.matrix, &tau.vector, &z.vector);
   }
-  double free = sqrt (dot (n, s->z, s->z));
+  double free = vector_norm (n, s->z);
   gsl_blas_dtrsv (CblasLower, CblasTrans, CblasNonUnit, s->L, &z.vector);
   return whole > 0 ? free / whole : 0;
 }
@@ -151,8 +142,8 @@ take_in (struct dual *s, size_t i, double d[])
         blocking = k;
       }
     if (share > ROW_DEPENDS && s->active < s->n) {
-      double off = s->sign[i] * (dot (s->n, row_of (s, i), d) - s->q->b[i]);
-      full = -off / (s->sign[i] * dot (s->n, row_of (s, i), s->z));
+      double off = s->sign[i] * (vector_dot (s->n, row_of (s, i), d) - s->q->b[i]);
+      full = -off / (s->sign[i] * vector_dot (s->n, row_of (s, i), s->z));
     }
     double step = fmin (most, full);
     if (!(step < HUGE_VAL)) {
@@ -181,7 +172,7 @@ solve (struct dual *s, double d[])
   const struct quadratic *q = s->q;
   size_t chosen = 0;
   for (size_t i = 0; i < q->rows; i++) {
-    s->norm[i] = sqrt (dot (s->n, row_of (s, i), row_of (s, i)));
+    s->norm[i] = sqrt (vector_dot (s->n, row_of (s, i), row_of (s, i)));
     s->sign[i] = 1;
     bool held = i < q->equalities ? fabs (q->b[i]) <= ROW_MET : q->b[i] <= ROW_MET;
     if (!(s->norm[i] > 0) && !held) {
