@@ -218,6 +218,23 @@ same_initial (const struct parser *p, const char *text)
   return p->scan.text[p->token.start] == text[0];
 }
 
+/* The words of the longest of COUNT texts that stands here, 0 if none does; which, in *FOUND.  */
+static size_t
+longest_here (const struct parser *p, const char *const texts[], size_t count, size_t *found)
+{
+  size_t best = 0;
+  if (p->token.kind != TOKEN_WORD)
+    return 0;
+  for (size_t i = 0; i < count; i++) {
+    size_t words = same_initial (p, texts[i]) ? words_here (p, texts[i]) : 0;
+    if (words > best) {
+      best = words;
+      *found = i;
+    }
+  }
+  return best;
+}
+
 size_t
 property_here (const struct parser *p, enum property *found)
 {
@@ -226,17 +243,10 @@ property_here (const struct parser *p, enum property *found)
 #include "language/properties.def"
 #undef PROPERTY
   };
-  size_t best = 0;
-  if (p->token.kind != TOKEN_WORD)
-    return 0;
-  for (size_t i = 0; i < sizeof texts / sizeof texts[0]; i++) {
-    size_t count = same_initial (p, texts[i]) ? words_here (p, texts[i]) : 0;
-    if (count > best) {
-      best = count;
-      *found = (enum property) i;
-    }
-  }
-  return best;
+  size_t i, words = longest_here (p, texts, sizeof texts / sizeof texts[0], &i);
+  if (words > 0)
+    *found = (enum property) i;
+  return words;
 }
 
 size_t
@@ -247,17 +257,10 @@ setting_here (const struct parser *p, enum setting *found)
 #include "language/settings.def"
 #undef SETTING
   };
-  size_t best = 0;
-  if (p->token.kind != TOKEN_WORD)
-    return 0;
-  for (size_t i = 0; i < sizeof texts / sizeof texts[0]; i++) {
-    size_t count = same_initial (p, texts[i]) ? words_here (p, texts[i]) : 0;
-    if (count > best) {
-      best = count;
-      *found = (enum setting) i;
-    }
-  }
-  return best;
+  size_t i, words = longest_here (p, texts, sizeof texts / sizeof texts[0], &i);
+  if (words > 0)
+    *found = (enum setting) i;
+  return words;
 }
 
 const char *
