@@ -555,23 +555,6 @@ part (unsigned long long *seed)
 }
 
 void
-elimination_null_mixed (const struct elimination *e, unsigned long long *seed, double x[])
-{
-  size_t inner = e->core_columns - e->core.rank, freedom = e->columns - elimination_rank (e);
-  memset (x, 0, e->columns * sizeof *x);
-  for (size_t k = 0; k < freedom; k++) {
-    double by = part (seed);
-    for (size_t j = 0; j < e->core_columns && k < inner; j++) {
-      x[e->core_column[j]] += by * space_null (&e->core, j, k);
-    }
-    if (k >= inner) {
-      x[e->core_column[e->core_columns + k - inner]] = by;
-    }
-  }
-  back (e, NULL, x);
-}
-
-void
 elimination_left_mixed (const struct elimination *e, unsigned long long *seed, double y[])
 {
   size_t inner = e->core_rows - e->core.rank, surplus = e->rows - elimination_rank (e);

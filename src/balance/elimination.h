@@ -23,9 +23,8 @@ void elimination_solve (const struct elimination *, const double b[], double x[]
    particular length.                                                                            */
 void elimination_null (const struct elimination *, size_t k, double x[]);
 void elimination_left (const struct elimination *, size_t k, double y[]);
-/* The same of all null vectors and all left null vectors in pseudorandom parts: an entry is nothing
-   only where it is in each of them.  SEED is moved on.                                          */
-void elimination_null_mixed (const struct elimination *, unsigned long long *seed, double x[]);
+/* All left null vectors in pseudorandom parts: an entry is nothing only where it is in each of
+   them.  SEED is moved on.                                                                      */
 void elimination_left_mixed (const struct elimination *, unsigned long long *seed, double y[]);
 
 #endif

@@ -331,7 +331,8 @@ gradient_make (struct arena *arena, const struct measured *measured)
   return ARENA_ARRAY (arena, measured->unknowns, double);
 }
 
-void
+/* The gradient of a form times FACTOR, added to F.  */
+static void
 form_gradient (const struct measured *measured, const struct form *form, double factor, double f[])
 {
   for (size_t i = 0; i < form->count; i++) {

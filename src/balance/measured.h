@@ -60,8 +60,6 @@ double figure_value (const struct figure *, const double v[]);
 /* Its gradient times FACTOR, added to F, by unknown.  */
 void figure_gradient (const struct measured *, const struct figure *, const double v[],
                       double factor, double f[]);
-/* The same of a form.  */
-void form_gradient (const struct measured *, const struct form *, double factor, double f[]);
 /* A new gradient, all zero.  */
 double *gradient_make (struct arena *, const struct measured *) MUST_CHECK;
 

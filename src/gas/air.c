@@ -1,7 +1,6 @@
 #include "config.h"
 #include "gas/air.h"
 
-#include <assert.h>
 #include <string.h>
 #include "gas/naming.h"
 #include "gas/species_private.h"
@@ -15,7 +14,7 @@ find_air (const struct species_table *table, const char *name)
 {
   size_t i = 0;
 
-  while (i < table->air_count && strcmp (table->airs[i].name, name) != 0)
+  while (i < table->air_count && strcmp (table->airs[i], name) != 0)
     i++;
   return i;
 }
@@ -29,14 +28,13 @@ find_part (const struct species_table *table, size_t air, const struct species *
   return NULL;
 }
 
-struct air_columns { int part, amount, title, source; };
-
+/* COLUMNS: of the part and of its amount.  */
 static bool
 read_row (struct species_table *species, const struct table *table, size_t row,
-          const struct air_columns *at, struct fault *fault)
+          const int columns[2], struct fault *fault)
 {
   const char *name = table_cell (table, row, 0);
-  const char *key = table_cell (table, row, at->part);
+  const char *key = table_cell (table, row, columns[0]);
   const struct species *one = species_of_key (species, key);
   size_t air = find_air (species, name);
   struct air_part *part;
@@ -44,14 +42,12 @@ read_row (struct species_table *species, const struct table *table, size_t row,
 
   if (one == NULL)
     return table_complain (table, row, "no component has this key", fault);
-  if (!table_number (table, row, at->amount, &amount, fault))
+  if (!table_number (table, row, columns[1], &amount, fault))
     return false;
   if (!(amount >= 0))
     return table_complain (table, row, "an amount of 0 or more is expected", fault);
   if (air == species->air_count)
-    species->airs[species->air_count++]
-      = (struct air) { name, table_cell (table, row, at->title),
-                       table_cell (table, row, at->source) };
+    species->airs[species->air_count++] = name;
   part = find_part (species, air, one);
   if (part == NULL)
     part = &species->air_parts[species->air_part_count++];
@@ -63,31 +59,16 @@ bool
 air_read (struct species_table *species, const char *directory, struct fault *fault)
 {
   const struct table *table = table_read (species->arena, "air", directory, fault);
-  struct air_columns at;
 
   if (table == NULL)
     return false;
-  at = (struct air_columns) { table_column (table, "part"), table_column (table, "mol_mol"),
-                              table_column (table, "title"), table_column (table, "source") };
-  species->airs = ARENA_ARRAY (species->arena, table_rows (table) + 1, struct air);
+  const int columns[] = { table_column (table, "part"), table_column (table, "mol_mol") };
+  species->airs = ARENA_ARRAY (species->arena, table_rows (table) + 1, const char *);
   species->air_parts = ARENA_ARRAY (species->arena, table_rows (table) + 1, struct air_part);
   for (size_t i = 0; i < table_rows (table); i++)
-    if (!read_row (species, table, i, &at, fault))
+    if (!read_row (species, table, i, columns, fault))
       return false;
   return true;
-}
-
-size_t
-air_size (const struct species_table *table)
-{
-  return table->air_count;
-}
-
-const struct air *
-air_at (const struct species_table *table, size_t i)
-{
-  assert (i < table->air_count);
-  return &table->airs[i];
 }
 
 bool

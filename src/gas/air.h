@@ -13,12 +13,6 @@
 
 struct arena; struct fault; struct species_table;
 
-/* A definition of air: "US76", "dry air, standard composition", "USSA 1976".  */
-struct air { const char *name, *title, *source; };
-
-size_t air_size (const struct species_table *);
-const struct air *air_at (const struct species_table *, size_t i);
-
 /* Is it `air` or `dry air`, whatever its capitals?  */
 bool air_is_name (const char *name, size_t n);
 

@@ -108,13 +108,6 @@ composition_fraction (const struct composition *c, const struct species *species
   return i < c->count ? c->fraction[i] : 0;
 }
 
-/* w_i = x_i M_i/M (ISO 14912:2003, mass fraction).  */
-double
-composition_mass_fraction (const struct composition *c, const struct species *species)
-{
-  return composition_fraction (c, species) * species->molar_mass / c->molar_mass;
-}
-
 /* With y of water in the wet gas the others share 1 - y in their old proportions:
    x_i' = x_i (1 - y)/sum_dry x_k.  The sum runs over the dry parts, since 1 - x_water would lose
    digits where the gas is nearly all water.                                                     */
@@ -142,17 +135,4 @@ composition_wetted (struct arena *arena, const struct composition *c, const stru
   if (y > 0 && position (c, water) == c->count)
     gathering_add (&g, water, y);
   return from_amounts (arena, &g, parts_total (g.count, g.parts));
-}
-
-/* phi_i = x_i Z_i/sum x_k Z_k (ISO 14912:2003): the volumes of the unmixed parts at one T and p
-   are in the ratio of n_i Z_i.                                                                  */
-void
-composition_volume_fractions (const struct composition *c, const double pure_Z[], double phi[])
-{
-  struct sum volume = { 0, 0 };
-  for (size_t i = 0; i < c->count; i++)
-    sum_add (&volume, c->fraction[i] * pure_Z[i]);
-  double total = sum_total (&volume);
-  for (size_t i = 0; i < c->count; i++)
-    phi[i] = c->fraction[i] * pure_Z[i] / total;
 }

@@ -35,7 +35,6 @@ const struct composition *composition_unclosed (struct arena *, const struct com
 const struct composition *composition_keep (struct arena *, const struct composition *) MUST_CHECK;
 
 double composition_fraction (const struct composition *, const struct species *);  /* 0: absent */
-double composition_mass_fraction (const struct composition *, const struct species *);
 
 /* The gas whose water (the species with key H2O, given as WATER) has the fraction Y (0 <= Y < 1)
    of the wet gas; all else keeps its proportions.  Y = 0 takes the water away.  Kind amount-range
@@ -43,10 +42,5 @@ double composition_mass_fraction (const struct composition *, const struct speci
 const struct composition *composition_wetted (struct arena *, const struct composition *,
                                               const struct species *water, double y,
                                               struct fault *) MUST_CHECK;
-
-/* A volume fraction at one T and P of the unmixed parts (ISO 14912): phi_i = x_i Z_i/sum x_k Z_k,
-   for given Z of the pure parts.  The way back is composition_make of phi_i/Z_i.               */
-void composition_volume_fractions (const struct composition *, const double pure_Z[],
-                                   double phi[]);
 
 #endif

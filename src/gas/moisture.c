@@ -97,8 +97,8 @@ water_pressure (double T, double *p, enum water_phase *phase, struct fault *faul
     return temperature_fault (fault, "ice and liquid", T,
                               (const double[]) { T_ice_least, T_critical });
   *phase = T < T_triple ? WATER_ICE : WATER_LIQUID;
-  *p = exp (*phase == WATER_ICE ? ice_curve (T).ln_p : liquid_curve (T).ln_p);
-  return true;
+  return *phase == WATER_ICE ? water_pressure_ice (T, p, fault)
+                             : water_pressure_liquid (T, p, fault);
 }
 
 /* The T between LEAST and MOST at which the rising curve meets LN_P.  Newton's steps are taken in

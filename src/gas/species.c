@@ -258,17 +258,3 @@ species_atoms (const struct species *species, const char *element)
     return 0;                            /* only a molar mass is known */
   return atoms_of (&atoms, element);
 }
-
-bool
-formula_molar_mass (const struct species_table *table, const char *formula, double *molar_mass,
-                    struct fault *fault)
-{
-  char plain[NAMING_ROOM];
-  size_t length = naming_plain (formula, strlen (formula), plain);
-  struct atoms atoms;
-
-  if (length > 0 && atoms_read (plain, length, &atoms)
-      && atoms_molar_mass (&table->elements, &atoms, molar_mass))
-    return true;
-  return fault_set (fault, MESSAGE_FORMULA, formula, NULL);
-}

@@ -70,9 +70,5 @@ void species_each_name (const struct species_table *, void (*visit) (const char 
 
 /* Atoms of ELEMENT ("N") in a formula; 0 if none.  */
 double species_atoms (const struct species *, const char *element);
-/* Molar mass (kg/mol) of a formula by the table of atomic weights; kind formula if it cannot be
-   read or names no element.                                                                   */
-bool formula_molar_mass (const struct species_table *, const char *formula, double *molar_mass,
-                         struct fault *) MUST_CHECK;
 
 #endif

@@ -23,7 +23,7 @@ struct species_table {
   const char **candidates;               /* these */
   struct map *made;                      /* species made on first use */
   struct elements elements;
-  struct air *airs;
+  const char **airs;                     /* the definitions, by name */
   size_t air_count;
   struct air_part *air_parts;
   size_t air_part_count;

@@ -42,7 +42,8 @@ next (struct draw *d)
   return result;
 }
 
-double
+/* Above 0, below 1.  */
+static double
 draw_uniform (struct draw *d)
 {
   /* The middle of one of 2^52 steps: neither 0 nor 1.  */

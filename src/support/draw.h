@@ -8,7 +8,6 @@
 struct draw { uint64_t state[4]; double second; bool has_second; };
 
 void draw_start (struct draw *, uint64_t seed);
-double draw_uniform (struct draw *);          /* above 0, below 1 */
 double draw_normal (struct draw *);           /* mean 0, standard deviation 1 */
 double draw_rectangular (struct draw *);      /* the same; between -sqrt(3) and sqrt(3) */
 

@@ -75,25 +75,6 @@ stays_open (bool open, enum ending ending)
   return ending == ENDING_COMMA || ending == ENDING_BACKSLASH;
 }
 
-bool
-reader_goes_on (const char *text, size_t n)
-{
-  bool open = false;
-  size_t at;
-
-  if (n == 0)
-    return false;
-  for (size_t start = 0; ;) {
-    const char *end = n > start ? memchr (text + start, '\n', n - start) : NULL;
-    size_t length = end != NULL ? (size_t) (end - (text + start)) : n - start;
-
-    open = stays_open (open, ending_of (text + start, length, &at));
-    if (end == NULL)
-      return open;
-    start += length + 1;
-  }
-}
-
 /* Takes a line end that the source has left, and before the very first line a byte-order mark. */
 static void
 clean_line (struct text *line, bool is_first)

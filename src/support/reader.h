@@ -27,10 +27,6 @@ struct reader {
    into *FIRST.  False at the end.                                                             */
 bool reader_next (struct reader *, struct text *, int *first) MUST_CHECK;
 
-/* True if a logical line that ends like TEXT goes on in the next one ('\' or ',' last, outside a
-   comment and outside quotes).                                                                */
-bool reader_goes_on (const char *text, size_t n);
-
 /* A reader over N bytes in memory, borrowed.  */
 struct reader_string { const char *bytes; size_t length, next; };
 struct reader reader_of_string (struct reader_string *, const char *name);

@@ -115,29 +115,11 @@ text_add_format (struct text *text, const char *format, ...)
   va_end (arguments);
 }
 
-/* The blanks that STRING of N bytes lacks to WIDTH characters.  */
-static size_t
-blanks_to (const char *string, size_t n, size_t width)
-{
-  size_t characters = utf8_characters (string, n);
-
-  return characters < width ? width - characters : 0;
-}
-
 void
 text_add_left (struct text *text, const char *string, size_t width)
 {
-  size_t n = strlen (string);
+  size_t n = strlen (string), characters = utf8_characters (string, n);
 
   text_add_bytes (text, string, n);
-  text_add_repeated (text, ' ', blanks_to (string, n, width));
-}
-
-void
-text_add_right (struct text *text, const char *string, size_t width)
-{
-  size_t n = strlen (string);
-
-  text_add_repeated (text, ' ', blanks_to (string, n, width));
-  text_add_bytes (text, string, n);
+  text_add_repeated (text, ' ', characters < width ? width - characters : 0);
 }

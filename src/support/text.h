@@ -22,9 +22,8 @@ void text_add_char (struct text *, char);
 void text_add_repeated (struct text *, char, size_t times);
 void text_add_format (struct text *, const char *format, ...) PRINTF_LIKE (2, 3);
 void text_add_arguments (struct text *, const char *format, va_list) PRINTF_LIKE (2, 0);
-/* Adds STRING and blanks behind (or, text_add_right, before it) to WIDTH characters.  */
+/* Adds STRING and blanks behind it to WIDTH characters.  */
 void text_add_left (struct text *, const char *string, size_t width);
-void text_add_right (struct text *, const char *string, size_t width);
 
 /* Characters in the first N bytes of TEXT.  */
 size_t utf8_characters (const char *text, size_t n);

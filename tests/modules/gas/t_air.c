@@ -72,16 +72,14 @@ parts (void)
 static void
 definitions (void)
 {
+  static const char *const names[] = { "US76", "CIPM2007", "L2000", "SIMPLE79" };
   const struct composition *air = NULL;
   struct fault none;
 
   start ();
   NEED (table != NULL);
-  SAME_INT (air_size (table), 4);
-  SAME_TEXT (air_at (table, 0)->name, "US76");
-  SAME_TEXT (air_at (table, 0)->source, "USSA 1976");
-  for (size_t i = 0; i < air_size (table); i++)
-    CHECK (air_composition (arena, table, air_at (table, i)->name, &air, &fault));
+  for (size_t i = 0; i < sizeof names / sizeof names[0]; i++)
+    CHECK (air_composition (arena, table, names[i], &air, &fault));
   fault_init (&none, arena);
   CHECK (!air_composition (arena, table, "Mars", &air, &none));
   SAME_INT (none.kind, MESSAGE_NAME_UNKNOWN);

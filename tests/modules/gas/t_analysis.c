@@ -210,8 +210,8 @@ random_mixed (uint64_t *state, bool with_rest, struct stated_part parts[],
     const struct species *species = whole[i].species;
     parts[i] = (struct stated_part) { .species = species };
     parts[i].basis = by_mass ? AMOUNT_MASS_FRACTION : AMOUNT_MOLE_FRACTION;
-    parts[i].amount = by_mass ? composition_mass_fraction (*truth, species)
-      : composition_fraction (*truth, species);
+    parts[i].amount = composition_fraction (*truth, species)
+      * (by_mass ? species->molar_mass / (*truth)->molar_mass : 1);
     if (given[i] > given[rest])
       rest = i;
   }

@@ -58,10 +58,10 @@ seeds (void)
   draw_start (&c, 8);
   int same = 0, other = 0;
   for (int i = 0; i < 100; i++) {
-    double x = draw_uniform (&a);
-    CHECK (x > 0 && x < 1);
-    same += fabs (x - draw_uniform (&b)) <= 0;
-    other += fabs (x - draw_uniform (&c)) > 0;
+    double x = draw_rectangular (&a);
+    CHECK (fabs (x) < sqrt (3.0));
+    same += fabs (x - draw_rectangular (&b)) <= 0;
+    other += fabs (x - draw_rectangular (&c)) > 0;
   }
   SAME_INT (same, 100);
   SAME_INT (other, 100);

@@ -102,24 +102,6 @@ remarks_and_blanks_between (void)
 
 /* What the answer to "does it go on" is for lines already joined.  */
 static void
-asked_by_itself (void)
-{
-  static const struct { const char *text; bool goes_on; } rows[] = {
-    { "", false }, { "a", false }, { ",", true }, { "\\", true }, { "a,", true },
-    { "a, ", true }, { "a,\n", false }, { "a,\n# b", true }, { "a,\nb", false },
-    { "a\n# b,", false }, { "a,\nb,", true }, { "\"a,", false }, { "\"a\",", true },
-    { "#,", false }, { "# \\", false }, { "\"\n,", true }, { "a\\\n  # b", true },
-  };
-
-  for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
-    test_about ("'%s'", rows[i].text);
-    SAME_INT (reader_goes_on (rows[i].text, strlen (rows[i].text)), rows[i].goes_on);
-  }
-  CHECK (!reader_goes_on ("a,", 1));
-  CHECK (!reader_goes_on (NULL, 0));
-}
-
-static void
 nothing_to_read (void)
 {
   struct reader_string string = { NULL, 0, 0 };
@@ -227,7 +209,6 @@ static const struct test_case cases[] = {
   { "a backslash goes on", a_backslash_goes_on },
   { "a comma goes on", a_comma_goes_on },
   { "remarks and blanks between", remarks_and_blanks_between },
-  { "asked by itself", asked_by_itself },
   { "nothing to read", nothing_to_read },
   { "null bytes stay in the text", null_bytes_stay_in_the_text },
   { "very long lines", very_long_lines },

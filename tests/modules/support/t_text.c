@@ -63,12 +63,12 @@ pads_by_characters (void)
   text_init (&text);
   text_add_left (&text, "CH₄", 5);
   text_add (&text, "|");
-  text_add_right (&text, "m³/h", 6);
+  text_add_left (&text, "m³/h", 6);
   text_add (&text, "|");
   text_add_left (&text, "longer", 3);
-  text_add_right (&text, "longer", 6);
+  text_add_left (&text, "longer", 6);
   text_add_left (&text, "", 2);
-  SAME_TEXT (text.bytes, "CH₄  |  m³/h|longerlonger  ");
+  SAME_TEXT (text.bytes, "CH₄  |m³/h  |longerlonger  ");
   text_clear (&text);
 }
 
