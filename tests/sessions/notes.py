@@ -9,10 +9,10 @@ import re
 import shutil
 import subprocess
 import sys
-import tempfile
 import xml.etree.ElementTree
 
-from session import Tap, program
+import session
+from session import Tap
 
 SESSION = """\
 gas raw = CH4 58.2 ± 0.3, CO2 rest, N2 1.4, O2 0.4, H2S 850 ppm mol% dry  # as analysed
@@ -33,33 +33,12 @@ SECTIONS = ["Given", "Reference states", "Results", "Assumptions and their weigh
             "Cautions", "Workings", "Sources", "Statements", "Signatures"]
 
 
-class Folder:
-    """A folder of its own for a session, gone afterwards."""
-
-    def __enter__(self):
-        self.path = tempfile.mkdtemp()
-        return self
-
-    def __exit__(self, *unused):
-        shutil.rmtree(self.path)
+class Folder(session.Folder):
+    """One in which runs go on after a failure, at a fixed time."""
 
     def run(self, statements, *arguments, form="text", epoch="86400"):
-        done = subprocess.run([program(), "--format", form, "--keep-going", *arguments],
-                              input=statements.encode(), cwd=self.path, stdout=subprocess.PIPE,
-                              stderr=subprocess.PIPE, check=False,
-                              env=dict(os.environ, SOURCE_DATE_EPOCH=epoch, TZ="Asia/Tokyo"))
-        return done.returncode, done.stdout.decode(), done.stderr.decode()
-
-    def read(self, name):
-        with open(os.path.join(self.path, name), encoding="utf-8") as file:
-            return file.read()
-
-    def write(self, name, text):
-        with open(os.path.join(self.path, name), "w", encoding="utf-8") as file:
-            file.write(text)
-
-    def names(self):
-        return sorted(os.listdir(self.path))
+        return super().run(statements, "--keep-going", *arguments, form=form,
+                           SOURCE_DATE_EPOCH=epoch, TZ="Asia/Tokyo")
 
 
 class Cells(html.parser.HTMLParser):

@@ -6,13 +6,10 @@ and labels against each other: letters are taken at the widths of Helvetica (Ado
 import json
 import os
 import re
-import shutil
-import subprocess
 import sys
-import tempfile
 import xml.etree.ElementTree
 
-from session import TOP, Tap, program
+from session import TOP, Folder, Tap
 
 SVG = "{http://www.w3.org/2000/svg}"
 OPEN = """\
@@ -56,29 +53,6 @@ stream four = 25 % of three
 stream five = three - four
 stream apart = 5 kg/h of N2
 """
-
-
-class Folder:
-    """A folder of its own for a session, gone afterwards."""
-
-    def __enter__(self):
-        self.path = tempfile.mkdtemp()
-        return self
-
-    def __exit__(self, *unused):
-        shutil.rmtree(self.path)
-
-    def run(self, statements, *arguments, form="json"):
-        done = subprocess.run([program(), "--format", form, *arguments],
-                              input=statements.encode(), cwd=self.path, stdout=subprocess.PIPE,
-                              stderr=subprocess.PIPE, check=False)
-        return done.returncode, done.stdout.decode(), done.stderr.decode()
-
-    def at(self, name):
-        return os.path.join(self.path, name)
-
-    def names(self):
-        return sorted(os.listdir(self.path))
 
 
 def texts(root):

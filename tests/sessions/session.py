@@ -1,9 +1,11 @@
-"""What the tests of whole sessions share: running the program, its answers, and TAP."""
+"""What the tests of whole sessions share: running the program, its answers, folders, and TAP."""
 import json
 import math
 import os
+import shutil
 import subprocess
 import sys
+import tempfile
 
 TOP = os.path.dirname(os.path.dirname(os.path.dirname(os.path.abspath(__file__))))
 
@@ -98,3 +100,36 @@ class Tap:
         """The plan; the status to end with."""
         print("1..%d" % self.count)
         return 1 if self.failed else 0
+
+
+class Folder:
+    """A folder of its own for a session, gone afterwards."""
+
+    def __enter__(self):
+        self.path = tempfile.mkdtemp()
+        return self
+
+    def __exit__(self, *unused):
+        shutil.rmtree(self.path)
+
+    def run(self, statements, *arguments, form="json", **variables):
+        """Exit status, answers and complaints of a run in it, with VARIABLES in its environment."""
+        done = subprocess.run([program(), "--format", form, *arguments],
+                              input=statements.encode(), cwd=self.path, stdout=subprocess.PIPE,
+                              stderr=subprocess.PIPE, check=False,
+                              env=dict(os.environ, **variables))
+        return done.returncode, done.stdout.decode(), done.stderr.decode()
+
+    def at(self, name):
+        return os.path.join(self.path, name)
+
+    def read(self, name):
+        with open(self.at(name), encoding="utf-8") as file:
+            return file.read()
+
+    def write(self, name, text):
+        with open(self.at(name), "w", encoding="utf-8") as file:
+            file.write(text)
+
+    def names(self):
+        return sorted(os.listdir(self.path))

@@ -5,7 +5,10 @@
 #   %C%_t_NAME_LDADD = $(with_language)
 
 suites += %D%/t_check
-%C%_t_check_SOURCES = %D%/t_check.c
+%C%_t_check_SOURCES = \
+  %D%/t_check.c \
+  %D%/typed.c \
+  %D%/typed.h
 %C%_t_check_LDADD = $(with_language)
 
 suites += %D%/t_parse
@@ -23,5 +26,8 @@ suites += %D%/t_samples
 %C%_t_samples_LDADD = $(with_language)
 
 suites += %D%/t_uncertainty
-%C%_t_uncertainty_SOURCES = %D%/t_uncertainty.c
+%C%_t_uncertainty_SOURCES = \
+  %D%/t_uncertainty.c \
+  %D%/typed.c \
+  %D%/typed.h
 %C%_t_uncertainty_LDADD = $(with_language)

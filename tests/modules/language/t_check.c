@@ -9,6 +9,7 @@
 #include "language/session.h"
 #include "language/tree.h"
 #include "libtest.h"
+#include "modules/language/typed.h"
 #include "result/check_verdict.h"
 #include "result/result.h"
 #include "support/arena.h"
@@ -19,37 +20,8 @@
 static const struct check_verdict *
 verdict_of (struct arena *arena, struct session *session, const char *text)
 {
-  const struct check_verdict *found = NULL;
-  struct parser *parser = parser_create (arena, session_vocabulary (session), text, strlen (text),
-                                         1, BLOCK_NONE);
-  struct statement *s;
-  struct fault fault;
-  fault_init (&fault, arena);
-  while (parser_next (parser, &s, &fault) && s) {
-    struct result result;
-    result_init (&result, arena, s->source);
-    if (!CHECK (session_run (session, s, &result, &fault))) {
-      return NULL;
-    }
-    found = result.check;
-  }
-  CHECK (found != NULL);
-  return found;
-}
-
-static void
-with_session (void (*each) (struct arena *, struct session *))
-{
-  struct arena *arena = arena_create ();
-  struct fault fault;
-  struct session *session;
-  fault_init (&fault, arena);
-  session = session_create (&(struct session_options) { NULL, NULL }, &fault);
-  if (CHECK (session != NULL)) {
-    each (arena, session);
-  }
-  session_destroy (session);
-  arena_destroy (arena);
+  const struct result *result = typed (arena, session, text);
+  return result && CHECK (result->check != NULL) ? result->check : NULL;
 }
 
 /* Half the last typed digit, end zeros of a whole number uncounted, 0.5 % at most; with ± two

@@ -7,6 +7,7 @@
 #include "language/session.h"
 #include "language/tree.h"
 #include "libtest.h"
+#include "modules/language/typed.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -16,36 +17,8 @@
 static const struct budget *
 budget_of (struct arena *arena, struct session *session, const char *text)
 {
-  const struct budget *found = NULL;
-  struct parser *parser = parser_create (arena, session_vocabulary (session), text, strlen (text),
-                                         1, BLOCK_NONE);
-  struct statement *s;
-  struct fault fault;
-  fault_init (&fault, arena);
-  while (parser_next (parser, &s, &fault) && s) {
-    struct result result;
-    result_init (&result, arena, s->source);
-    if (!CHECK (session_run (session, s, &result, &fault))) {
-      return NULL;
-    }
-    found = result.answers ? result.answers->budget : NULL;
-  }
-  return found;
-}
-
-static void
-with_session (void (*each) (struct arena *, struct session *))
-{
-  struct arena *arena = arena_create ();
-  struct fault fault;
-  struct session *session;
-  fault_init (&fault, arena);
-  session = session_create (&(struct session_options) { NULL, NULL }, &fault);
-  if (CHECK (session != NULL)) {
-    each (arena, session);
-  }
-  session_destroy (session);
-  arena_destroy (arena);
+  const struct result *result = typed (arena, session, text);
+  return result && result->answers ? result->answers->budget : NULL;
 }
 
 /* JCGM 100:2008, eq. 10: u(b - a)^2 = u(a)^2 + u(b)^2 = 3^2 + 4^2.  */

@@ -5,6 +5,7 @@
 #include <string.h>
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "property/property_tables.h"
 #include "support/arena.h"
 
 enum { PARTS_MOST = 16 };
@@ -17,11 +18,14 @@ gases_start (struct gases *g)
   fault_init (&g->fault, g->arena);
   if (g->species == NULL)
     g->species = species_table_create (NULL, &g->fault);
+  if (g->tables == NULL)
+    g->tables = property_tables_create (NULL);
 }
 
 void
 gases_end (struct gases *g)
 {
+  property_tables_destroy (g->tables);
   species_table_destroy (g->species);
   arena_destroy (g->arena);
 }

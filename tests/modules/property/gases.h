@@ -4,11 +4,16 @@
 
 #include "support/fault.h"
 
-struct arena; struct composition; struct species; struct species_table;
+struct arena; struct composition; struct property_tables; struct species; struct species_table;
 
-struct gases { struct arena *arena; struct fault fault; struct species_table *species; };
+struct gases {
+  struct arena *arena;
+  struct fault fault;
+  struct species_table *species;
+  struct property_tables *tables;
+};
 
-/* Everything afresh but the species, which are read once.  */
+/* Everything afresh but the species and tables, which are read once.  */
 void gases_start (struct gases *);
 void gases_end (struct gases *);
 

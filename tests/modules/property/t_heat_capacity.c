@@ -7,22 +7,18 @@
 #include "libtest.h"
 #include "modules/property/gases.h"
 #include "property/heat_capacity.h"
-#include "property/property_tables.h"
 #include "support/arena.h"
 #include "units/constants.h"
 #include "units/workings.h"
 
 static struct gases gases;
-static struct property_tables *tables;
 
 static bool
 heat (const char *gas, double T, struct ideal_heat *found)
 {
   gases_start (&gases);
-  if (tables == NULL)
-    tables = property_tables_create (NULL);
   const struct composition *made = gases_make (&gases, gas);
-  return made != NULL && heat_of_gas (tables, made, T, found, NULL, &gases.fault);
+  return made != NULL && heat_of_gas (gases.tables, made, T, found, NULL, &gases.fault);
 }
 
 static void
@@ -115,18 +111,17 @@ derivatives (void)
 {
   size_t checked = 0;
   gases_start (&gases);
-  tables = tables == NULL ? property_tables_create (NULL) : tables;
   for (size_t i = 0; i < species_table_size (gases.species); i++) {
     const struct species *one = species_table_at (gases.species, i);
     const struct composition *gas = composition_pure (gases.arena, one);
     struct ideal_heat at = { 0 }, below = { 0 }, above = { 0 };
     double T = 260 + 3.1 * (double) i, step = 1e-3 * T;
     fault_init (&gases.fault, gases.arena);
-    if (!heat_of_gas (tables, gas, T, &at, NULL, &gases.fault))
+    if (!heat_of_gas (gases.tables, gas, T, &at, NULL, &gases.fault))
       continue;                          /* no row: see lacking */
     test_about ("%s, %g K", one->key, T);
-    NEED (heat_of_gas (tables, gas, T - step, &below, NULL, &gases.fault));
-    NEED (heat_of_gas (tables, gas, T + step, &above, NULL, &gases.fault));
+    NEED (heat_of_gas (gases.tables, gas, T - step, &below, NULL, &gases.fault));
+    NEED (heat_of_gas (gases.tables, gas, T + step, &above, NULL, &gases.fault));
     NEAR ((above.enthalpy - below.enthalpy) / (2 * step), at.cp, 2e-5);
     NEAR (T * (above.entropy - below.entropy) / (2 * step), at.cp, 2e-5);
     CHECK (at.cp > 2.49 * GAS_CONSTANT);
@@ -198,7 +193,8 @@ said (void)
   struct ideal_heat h = { 0 };
   NEED (heat ("N2 1", 300, &h));
   workings_init (&workings, gases.arena);
-  NEED (heat_of_gas (tables, gases_make (&gases, "N2 1"), 300, &h, &workings, &gases.fault));
+  NEED (heat_of_gas (gases.tables, gases_make (&gases, "N2 1"), 300, &h, &workings,
+                     &gases.fault));
   SAME_INT (workings.count, 1);
   NEAR (workings.last->value, h.cp, 0);
 }
@@ -221,7 +217,6 @@ int
 main (int argc, char *argv[])
 {
   int status = test_main (argc, argv, cases);
-  property_tables_destroy (tables);
   gases_end (&gases);
   return status;
 }

@@ -6,22 +6,18 @@
 #include "gas/species.h"
 #include "libtest.h"
 #include "modules/property/gases.h"
-#include "property/property_tables.h"
 #include "property/viscosity.h"
 #include "support/arena.h"
 #include "units/workings.h"
 
 static struct gases gases;
-static struct property_tables *tables;
 
 static bool
 viscosity (const char *gas, double T, struct viscosity *found)
 {
   gases_start (&gases);
-  if (tables == NULL)
-    tables = property_tables_create (NULL);
   const struct composition *made = gases_make (&gases, gas);
-  return made != NULL && viscosity_of_gas (tables, made, T, found, NULL, &gases.fault);
+  return made != NULL && viscosity_of_gas (gases.tables, made, T, found, NULL, &gases.fault);
 }
 
 /* Three decimals of a micropascal second are given.  The VDI Heat Atlas and Perry's handbook agree
@@ -138,7 +134,7 @@ lacking (void)
   NEAR (v.value, -7, 0);
   gases_start (&gases);
   workings_init (&workings, gases.arena);
-  NEED (viscosity_of_gas (tables, gases_make (&gases, "N2 1, O2 1"), 300, &v, &workings,
+  NEED (viscosity_of_gas (gases.tables, gases_make (&gases, "N2 1, O2 1"), 300, &v, &workings,
                           &gases.fault));
   SAME_INT (workings.count, 1);
 }
@@ -158,7 +154,6 @@ int
 main (int argc, char *argv[])
 {
   int status = test_main (argc, argv, cases);
-  property_tables_destroy (tables);
   gases_end (&gases);
   return status;
 }

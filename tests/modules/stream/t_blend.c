@@ -5,21 +5,17 @@
 #include "libtest.h"
 #include "modules/property/gases.h"
 #include "property/heat_capacity.h"
-#include "property/property_tables.h"
 #include "stream/blend.h"
 #include "stream/stream.h"
 #include "support/arena.h"
 #include "units/workings.h"
 
 static struct gases gases;
-static struct property_tables *tables;
 
 static void
 start (void)
 {
   gases_start (&gases);
-  if (tables == NULL)
-    tables = property_tables_create (NULL);
 }
 
 static struct stream
@@ -35,7 +31,7 @@ static bool
 blend (const struct stream *a, const struct stream *b, struct blend_temperature *t)
 {
   return a->gas != NULL && b->gas != NULL
-         && stream_blend_temperature (tables, a, b, t, NULL, &gases.fault);
+         && stream_blend_temperature (gases.tables, a, b, t, NULL, &gases.fault);
 }
 
 /* A monatomic gas has one heat capacity: the mean by moles, exactly.  */
@@ -81,7 +77,7 @@ static double
 enthalpy (const struct stream *s, double T)
 {
   struct ideal_heat h = { 0 };
-  CHECK (heat_of_gas (tables, s->gas, T, &h, NULL, &gases.fault));
+  CHECK (heat_of_gas (gases.tables, s->gas, T, &h, NULL, &gases.fault));
   return s->moles * h.enthalpy;
 }
 
@@ -162,7 +158,7 @@ ranges_and_faults (void)
   a = stream_of ("D4 1, N2 99", 1, 250);
   b = stream_of ("N2 1", 1, 400);
   workings_init (&workings, gases.arena);
-  NEED (stream_blend_temperature (tables, &a, &b, &t, &workings, &gases.fault));
+  NEED (stream_blend_temperature (gases.tables, &a, &b, &t, &workings, &gases.fault));
   SAME_INT (workings.count, 1);
   NEED (t.outside != NULL);
   SAME_TEXT (t.outside->key, "D4");
@@ -183,7 +179,6 @@ int
 main (int argc, char *argv[])
 {
   int status = test_main (argc, argv, cases);
-  property_tables_destroy (tables);
   gases_end (&gases);
   return status;
 }
