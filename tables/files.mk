@@ -52,21 +52,25 @@ dist_demo_DATA = \
 # what stands behind each kind.
 BUILT_SOURCES += made/message_kinds.h made/message_rows.h made/tables.c
 CLEANFILES += made/message_kinds.h made/message_rows.h made/tables.c
-EXTRA_DIST += src/support/embed.awk src/support/message_kinds.awk
+EXTRA_DIST += \
+  src/support/embed.awk \
+  src/support/message_kinds.awk \
+  src/support/rows.awk
 
-made/tables.c: $(tables) src/support/embed.awk
+made/tables.c: $(tables) src/support/embed.awk src/support/rows.awk
 	$(AM_V_GEN)$(MKDIR_P) made \
-	  && (cd $(srcdir) && LC_ALL=C $(AWK) -f src/support/embed.awk $(tables)) > made/tables.new \
+	  && (cd $(srcdir) && LC_ALL=C $(AWK) -f src/support/rows.awk -f src/support/embed.awk \
+	        $(tables)) > made/tables.new \
 	  && mv -f made/tables.new $@
 
-made/message_kinds.h: %D%/messages.tsv src/support/message_kinds.awk
+made/message_kinds.h: %D%/messages.tsv src/support/message_kinds.awk src/support/rows.awk
 	$(AM_V_GEN)$(MKDIR_P) made \
-	  && (cd $(srcdir) && LC_ALL=C $(AWK) -v make=kinds -f src/support/message_kinds.awk \
-	        %D%/messages.tsv) > made/kinds.new \
+	  && (cd $(srcdir) && LC_ALL=C $(AWK) -v make=kinds -f src/support/rows.awk \
+	        -f src/support/message_kinds.awk %D%/messages.tsv) > made/kinds.new \
 	  && mv -f made/kinds.new $@
 
-made/message_rows.h: %D%/messages.tsv src/support/message_kinds.awk
+made/message_rows.h: %D%/messages.tsv src/support/message_kinds.awk src/support/rows.awk
 	$(AM_V_GEN)$(MKDIR_P) made \
-	  && (cd $(srcdir) && LC_ALL=C $(AWK) -v make=rows -f src/support/message_kinds.awk \
-	        %D%/messages.tsv) > made/rows.new \
+	  && (cd $(srcdir) && LC_ALL=C $(AWK) -v make=rows -f src/support/rows.awk \
+	        -f src/support/message_kinds.awk %D%/messages.tsv) > made/rows.new \
 	  && mv -f made/rows.new $@

@@ -8,14 +8,15 @@ trap 'rm -rf "$work"' EXIT
 cd "$top" || exit 99
 awk=${AWK:-awk}
 
-embed() { LC_ALL=C "$awk" -f src/support/embed.awk "$@"; }
+embed() { LC_ALL=C "$awk" -f src/support/rows.awk -f src/support/embed.awk "$@"; }
 
 # What the program says of the table $1 (in printf's notation) must be $2.
 refuses() {
   mkdir -p "$work/tables"
   # shellcheck disable=SC2059  # the table is the format
   printf "$1" > "$work/tables/try.tsv"
-  said=$(cd "$work" && LC_ALL=C "$awk" -f "$top/src/support/embed.awk" tables/try.tsv 2>&1 >/dev/null)
+  said=$(cd "$work" && LC_ALL=C "$awk" -f "$top/src/support/rows.awk" \
+         -f "$top/src/support/embed.awk" tables/try.tsv 2>&1 >/dev/null)
   status=$?
   tell "$([ "$status" != 0 ] && [ "$said" = "$2" ] || echo "status $status: $said")" "refused: $2"
 }

@@ -5,12 +5,6 @@
 # differ by nothing but the coefficient share a slot, so that they can be added up for a mixture.
 # Here the slots are numbered: by exponential, by d, by t.  t is kept as whole + part/40.
 
-function complain(what) {
-  printf "%s:%d: %s\n", FILENAME, FNR, what > "/dev/stderr"
-  failed = 1
-  exit 1
-}
-
 # VALUE as a whole number of eighths.
 function eighths_of(value,   k) {
   k = int(8 * value + 0.5)

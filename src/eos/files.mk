@@ -43,14 +43,16 @@ BUILT_SOURCES += made/aga8_rows.h made/gerg_rows.h
 CLEANFILES += made/aga8_rows.h made/gerg_rows.h
 EXTRA_DIST += %D%/equation_rows.awk
 
-made/gerg_rows.h: $(gerg_tables) %D%/equation_rows.awk
+made/gerg_rows.h: $(gerg_tables) %D%/equation_rows.awk src/support/rows.awk
 	$(AM_V_GEN)$(MKDIR_P) made \
-	  && (cd $(srcdir) && LC_ALL=C $(AWK) -v make=gerg -f %D%/equation_rows.awk \
+	  && (cd $(srcdir) && LC_ALL=C $(AWK) -v make=gerg -f src/support/rows.awk \
+	        -f %D%/equation_rows.awk \
 	        $(gerg_tables)) > made/gerg.new \
 	  && mv -f made/gerg.new $@
 
-made/aga8_rows.h: $(aga8_tables) %D%/equation_rows.awk
+made/aga8_rows.h: $(aga8_tables) %D%/equation_rows.awk src/support/rows.awk
 	$(AM_V_GEN)$(MKDIR_P) made \
-	  && (cd $(srcdir) && LC_ALL=C $(AWK) -v make=aga8 -f %D%/equation_rows.awk \
+	  && (cd $(srcdir) && LC_ALL=C $(AWK) -v make=aga8 -f src/support/rows.awk \
+	        -f %D%/equation_rows.awk \
 	        $(aga8_tables)) > made/aga8.new \
 	  && mv -f made/aga8.new $@

@@ -5,32 +5,11 @@
 # rows are sorted by the bytes of their first column, each key once, unless a remark says
 # "# order: as written" or "# several rows a key".  Run with LC_ALL=C, or the order is another one.
 
-function complain(line, what) {
-  printf "%s:%d: %s\n", FILENAME, line, what > "/dev/stderr"
-  failed = 1
-  exit 1
-}
-
-# S as a C string.  '?' is escaped because "??=" would be a trigraph.
-function quoted(s,   i, c, made) {
-  made = ""
-  for (i = 1; i <= length(s); i++) {
-    c = substr(s, i, 1)
-    if (c == "\\" || c == "\"" || c == "?")
-      made = made "\\" c
-    else if (c == "\t")
-      made = made "\\000"
-    else
-      made = made c
-  }
-  return "\"" made "\""
-}
-
 function finish_table() {
   if (name == "")
     return
   if (columns == 0)
-    complain(lines, "no line names the columns")
+    complain("no line names the columns", lines)
   print "  NULL\n};\n"
   widths[count] = columns
 }
@@ -49,7 +28,7 @@ FNR == 1 {
   sub(/^.*\//, "", name)
   sub(/\.tsv$/, "", name)
   if (name !~ /^[a-z][a-z0-9_]*$/)
-    complain(1, "a table's name is of small letters, digits and '_'")
+    complain("a table's name is of small letters, digits and '_'", 1)
   names[++count] = name
   columns = 0
   as_written = several = 0
@@ -59,7 +38,7 @@ FNR == 1 {
 
 { lines = FNR }
 
-/\r$/ { complain(FNR, "the line ends in a carriage return") }
+/\r$/ { complain("the line ends in a carriage return") }
 
 /^#/ {
   if ($0 ~ /^# *order: as written *$/)
@@ -69,21 +48,21 @@ FNR == 1 {
   next
 }
 
-/^$/ { complain(FNR, "an empty line") }
+/^$/ { complain("an empty line") }
 
 columns == 0 {
   columns = NF
   if ($NF != "source")
-    complain(FNR, "the last column is not 'source'")
+    complain("the last column is not 'source'")
   print "  " quoted($0) ","
   next
 }
 
-NF != columns { complain(FNR, NF " columns where there are " columns) }
-$1 == "" { complain(FNR, "no key in the first column") }
-$NF ~ /^[ ]*$/ { complain(FNR, "no source") }
-!as_written && ($1 "") < (last "") { complain(FNR, "'" $1 "' stands behind '" last "'") }
-!as_written && !several && ($1 "") == (last "") { complain(FNR, "a second row for '" $1 "'") }
+NF != columns { complain(NF " columns where there are " columns) }
+$1 == "" { complain("no key in the first column") }
+$NF ~ /^[ ]*$/ { complain("no source") }
+!as_written && ($1 "") < (last "") { complain("'" $1 "' stands behind '" last "'") }
+!as_written && !several && ($1 "") == (last "") { complain("a second row for '" $1 "'") }
 
 {
   last = $1

@@ -4,22 +4,6 @@
 # one line a kind: MESSAGE_ROW (NUMBER_COMMA, "number-comma", ERROR, "sentence", "way on").  The
 # form of the rows is proved by embed.awk; here only what is particular to messages.
 
-function complain(what) {
-  printf "%s:%d: %s\n", FILENAME, FNR, what > "/dev/stderr"
-  failed = 1
-  exit 1
-}
-
-# S as a C string.  '?' is escaped because "??=" would be a trigraph.
-function quoted(s,   i, c, made) {
-  made = ""
-  for (i = 1; i <= length(s); i++) {
-    c = substr(s, i, 1)
-    made = made (c == "\\" || c == "\"" || c == "?" ? "\\" c : c)
-  }
-  return "\"" made "\""
-}
-
 BEGIN {
   FS = "\t"
   print "/* Made from tables/messages.tsv; a change belongs there.  */"

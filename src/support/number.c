@@ -279,19 +279,26 @@ add_whole (struct text *text, int whole)
   text_add_bytes (text, start, (size_t) (end - start));
 }
 
+/* What stands before the digits: the sign.  False: VALUE is zero, and that is written.  */
+static bool
+add_sign (struct text *text, double value)
+{
+  assert (isfinite (value));
+  if (value < 0)
+    text_add_char (text, '-');
+  else if (value <= 0)
+    text_add_char (text, '0');
+  return fabs (value) > 0;
+}
+
 void
 number_write (struct text *text, double value, int digits)
 {
   struct decimal decimal;
   struct figure figure;
 
-  assert (isfinite (value));
-  if (fabs (value) <= 0) {
-    text_add_char (text, '0');
+  if (!add_sign (text, value))
     return;
-  }
-  if (value < 0)
-    text_add_char (text, '-');
   decimal = decimal_of (fabs (value), digits);
   figure_make (&figure, &decimal, digits);
   if (figure.exponent >= LEAST_PLAIN && figure.exponent <= MOST_PLAIN)
@@ -327,13 +334,8 @@ number_write_exact (struct text *text, double value)
   struct figure figure;
   int precision = EXACT_LEAST;
 
-  assert (isfinite (value));
-  if (fabs (value) <= 0) {
-    text_add_char (text, '0');
+  if (!add_sign (text, value))
     return;
-  }
-  if (value < 0)
-    text_add_char (text, '-');
   decimal = decimal_of (fabs (value), precision);
   while (!decimal.reads_back && precision < DECIMAL_MOST_DIGITS)
     decimal = decimal_of (fabs (value), ++precision);
