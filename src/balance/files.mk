@@ -15,6 +15,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/conflict.h \
   %D%/core.c \
   %D%/core.h \
+  %D%/digits.c \
+  %D%/digits.h \
   %D%/elimination.c \
   %D%/elimination.h \
   %D%/factor.c \
@@ -28,6 +30,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/fronts.h \
   %D%/gross.c \
   %D%/gross.h \
+  %D%/loose.c \
+  %D%/loose.h \
   %D%/measured.c \
   %D%/measured.h \
   %D%/minimise.c \

@@ -1,9 +1,9 @@
 /* What a network comes to: solved, short of facts, or with facts that clash.
 
    The mathematics is described where it is done: rows in system.h, rank in rank.h, what agrees in
-   agree.c, splits of unknown share in bend.c, what is fixed in fixed.h, clashes in conflict.h,
-   what would help in suggest.h, reconciliation in reconcile.c, the tests for gross errors in
-   gross.c.                                                                                      */
+   agree.c, splits of unknown share in bend.c, what is fixed in fixed.h, what only last digits fix
+   in loose.h, clashes in conflict.h, what would help in suggest.h, reconciliation in reconcile.c,
+   the tests for gross errors in gross.c.                                                        */
 #ifndef BALANCE_SOLUTION_H
 #define BALANCE_SOLUTION_H
 
@@ -58,6 +58,19 @@ struct conflict {
   double p;                      /* of agreement within the digits typed */
 };
 
+/* A result that hangs on the last digits of figures: it moves by `moves` when each of them moves by
+   half its last digit.  A hinge is a fact responsible (COMPONENT of a composition, else
+   `components`), and how far half a digit of it alone takes END; NAN: anywhere.                 */
+struct loose_end { struct quantity quantity; double value, moves; };
+struct hinge { size_t fact, component, end; double least, greatest; };
+struct loose {
+  size_t count; const struct loose_end *ends;            /* the worst first */
+  size_t hinge_count; const struct hinge *hinges;        /* likewise */
+  size_t directions;                     /* figures more that would settle them */
+  size_t suggestion_count; const struct suggestion *suggestions;         /* as in the solution */
+  const bool *total, *fraction;          /* by stream; by column */
+};
+
 /* A measured figure before and after.  */
 enum figure_class { FIGURE_REDUNDANT, FIGURE_NEEDED, FIGURE_UNOBSERVABLE };
 struct adjustment {
@@ -109,6 +122,7 @@ struct solution {
                                     alternatives to each member (the same `group`) */
   size_t useless_count; const struct quantity *useless;  /* look helpful and are not */
   size_t left_count; const struct relation_left *left;
+  const struct loose *loose;     /* practically undetermined; null: nothing is */
 
   size_t redundant_count; const size_t *redundant;       /* facts the others imply */
   const bool *checkable;         /* by fact: could anything else contradict it? */

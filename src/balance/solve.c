@@ -6,6 +6,7 @@
 #include "balance/conflict.h"
 #include "balance/core.h"
 #include "balance/fixed.h"
+#include "balance/loose.h"
 #include "balance/measured.h"
 #include "balance/rank.h"
 #include "balance/reconcile.h"
@@ -168,8 +169,10 @@ copy_roots (struct arena *keep, const struct core *core, struct solution *soluti
   solution->other_count = core->freedom == 0 ? core->roots : 0;
 }
 
+/* TYPED has the facts as they were before figures were moved within their digits.  */
 static struct solution *
-answer (struct arena *keep, const struct core *core, struct fault *fault)
+answer (struct arena *keep, const struct core *core, const struct network *typed,
+        struct fault *fault)
 {
   struct solution *solution = ARENA_NEW (keep, struct solution);
   solution->status = status_of (core);
@@ -183,7 +186,8 @@ answer (struct arena *keep, const struct core *core, struct fault *fault)
   solution->mass_out = edge_mass (core, solution, false);
   if (core->agree) {
     suggest (keep, core, solution);
-    return core_goes_on (core->options, fault) ? solution : NULL;
+    return core_goes_on (core->options, fault) && loose_find (keep, core, typed, solution, fault)
+             ? solution : NULL;
   } else if (!conflict_find (keep, core, solution, fault)) {
     return NULL;
   }
@@ -201,7 +205,7 @@ solve_exact (struct arena *keep, const struct core *core, struct fault *fault)
   if (!idle_look (keep, &idle, fault)) {
     return NULL;
   }
-  solution = answer (keep, idle.core, fault);
+  solution = answer (keep, idle.core, core->network, fault);
   if (solution && idle.conflict && !solution->conflict) {
     solution->status = BALANCE_CONTRADICTORY;
     solution->conflict = idle.conflict;
@@ -261,7 +265,7 @@ solve_measured (struct arena *keep, struct core *exact, struct fault *fault)
   const struct core *core;
   if (!exact->agree) {
     core_open (exact);
-    return answer (keep, exact, fault);
+    return answer (keep, exact, network, fault);
   }
   if (!system_reconcile (keep, exact->system, exact->options, &reconciled, fault)) {
     return NULL;

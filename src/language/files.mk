@@ -18,6 +18,7 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/balance/verdict_around.c \
   %D%/balance/verdict_clash.c \
   %D%/balance/verdict_flows.c \
+  %D%/balance/verdict_loose.c \
   %D%/balance/verdict_moved.c \
   %D%/balance/verdict_open.c \
   %D%/balance/verdict_private.h \

@@ -129,6 +129,8 @@ report_verdict (struct text *out, const struct report_style *style,
     "streams":{NAME:{"molar_flow","mass_flow","uncertainty","fractions":{...},
       "fraction_uncertainties":{...}}},"ranges":{NAME:{"least","greatest"}},"determined":[text],
     "undetermined":[text],"suggestions":[[text]],"relations_left":[text],"negative":[NAME],
+    "practically_undetermined":[{"what","value","moves","unit"}],
+    "hangs_on":[{"line","statement","what","least","greatest","unit"}],"settled_by":[[text]],
     "gap":{"around","component","value","unit"}|null,"conflict":[line],"redundant":[line],
     "suspects":[{"line","statement","needed","unit"}],"adjustments":[{"statement","component",
     "stated","reconciled","uncertainty","unit","z"}],"global_test":{"chi2","degrees_of_freedom",
@@ -196,6 +198,36 @@ streams_add (struct text *out, const struct balance_verdict *v)
     text_add_char (out, '}');
   }
   text_add_char (out, '}');
+}
+
+/* What hangs on last digits, and on whose.  */
+static void
+loose_add (struct text *out, const struct balance_verdict *v)
+{
+  text_add (out, ",\"practically_undetermined\":[");
+  for (size_t i = 0; i < v->loose_count; i++) {
+    const struct verdict_loose *loose = &v->loose[i];
+    text_member (out, i > 0 ? ",{\"what\":" : "{\"what\":", loose->what);
+    json_figure (out, ",\"value\":", loose->value);
+    json_figure (out, ",\"moves\":", loose->moves);
+    text_member (out, ",\"unit\":", loose->unit);
+    text_add_char (out, '}');
+  }
+  text_add (out, "],\"hangs_on\":[");
+  for (size_t i = 0; i < v->hinge_count; i++) {
+    const struct verdict_hinge *hinge = &v->hinges[i];
+    text_add_format (out, "%s{\"line\":%zu", i > 0 ? "," : "", hinge->line);
+    text_member (out, ",\"statement\":", hinge->statement);
+    text_member (out, ",\"what\":", hinge->what);
+    json_figure (out, ",\"least\":", hinge->least);
+    json_figure (out, ",\"greatest\":", hinge->greatest);
+    text_member (out, ",\"unit\":", hinge->unit);
+    text_add_char (out, '}');
+  }
+  text_add (out, "],\"settled_by\":[");
+  for (size_t i = 0; i < v->settled_by_count; i++)
+    texts_add (out, i > 0 ? "," : "", &v->settled_by[i]);
+  text_add_char (out, ']');
 }
 
 static void
@@ -275,6 +307,7 @@ report_verdict_json (struct text *out, const struct balance_verdict *v)
   text_add_char (out, ']');
   texts_add (out, ",\"relations_left\":", &v->relations_left);
   texts_add (out, ",\"negative\":", &v->negative);
+  loose_add (out, v);
   if (v->gap_around != NULL) {
     text_member (out, ",\"gap\":{\"around\":", v->gap_around);
     text_member (out, ",\"component\":", v->gap_component);

@@ -30,6 +30,10 @@ struct verdict_adjustment {
   const char *statement, *component, *unit;      /* component: null where it is no share */
   double stated, reconciled, uncertainty, z;
 };
+/* A result that hangs on last digits, with what it moves by; a line that it hangs on, and how far
+   half a last digit of it takes it (NAN: anywhere).                                             */
+struct verdict_loose { const char *what, *unit; double value, moves; };
+struct verdict_hinge { size_t line; const char *statement, *what, *unit; double least, greatest; };
 struct verdict_texts { size_t count; const char *const *at; };
 
 struct balance_verdict {
@@ -53,6 +57,9 @@ struct balance_verdict {
   size_t range_count; const struct verdict_range *ranges;
   struct verdict_texts determined, undetermined, relations_left, negative, conflict, redundant;
   size_t suggestion_count; const struct verdict_texts *suggestions;
+  size_t loose_count; const struct verdict_loose *loose;
+  size_t hinge_count; const struct verdict_hinge *hinges;
+  size_t settled_by_count; const struct verdict_texts *settled_by;       /* as suggestions */
   const char *gap_around, *gap_component, *gap_unit;             /* null: no gap */
   double gap;
   size_t suspect_count; const struct verdict_suspect *suspects;

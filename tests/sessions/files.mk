@@ -17,6 +17,7 @@ session_tests = \
   %D%/balance_forms.sh \
   %D%/balances.sh \
   %D%/claims.sh \
+  %D%/clashes.sh \
   %D%/contract.sh \
   %D%/energy.sh \
   %D%/figures.sh \

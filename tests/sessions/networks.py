@@ -351,6 +351,8 @@ def look_determined(study, way, facts, balance, _):
         study.fail(way, facts.name, "status " + balance["status"])
     elif balance["degrees_of_freedom"] != 0 or balance["surplus"] != 0:
         study.fail(way, facts.name, "counts %(degrees_of_freedom)d, %(surplus)d" % balance)
+    for one in balance["practically_undetermined"][:2]:
+        study.fail(way, facts.name, "%(what)s is said to hang on last digits" % one)
     for line in far(facts, balance, 1e-7)[:2]:
         study.fail(way, facts.name, line)
 
@@ -420,6 +422,8 @@ def look_redundant(study, way, facts, balance, extra):
     else:
         for line in far(facts, balance, 0.05)[:2]:
             study.fail(way, facts.name, line)
+        for one in balance["practically_undetermined"][:2]:
+            study.fail(way, facts.name, "%(what)s is said to hang on last digits" % one)
 
 
 def look_wrong(study, way, facts, balance, bad):

@@ -243,7 +243,7 @@ plant_is_fixed (const struct plant *plant, size_t stream)
     if (!solution->fixed[plant_column (plant, stream, c)]) {
       return false;
     }
-  return true;
+  return !solution->loose || !solution->loose->total[stream];
 }
 
 double

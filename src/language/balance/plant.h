@@ -72,7 +72,7 @@ const struct plant *plant_make (struct evaluation *, const struct statement *,
 size_t plant_find (const struct plant *, const char *name);
 size_t plant_column (const struct plant *, size_t stream, size_t component);
 
-/* Is all of a stream known?  */
+/* Is all of a stream known, and its flow by more than last digits?  */
 bool plant_is_fixed (const struct plant *, size_t stream);
 /* Its total, mol/s (kg/s in a balance of whole flows by mass).  */
 double plant_total (const struct plant *, size_t stream);

@@ -141,11 +141,14 @@ count_facts (struct verdict_maker *m)
   v->independent = count->rank;
   v->missing = count->missing;
   v->surplus = count->surplus;
-  v->counts = arena_format (arena, "%s; %s + %s + %s, %zu independent",
+  const size_t loose = m->solution->loose ? m->solution->loose->directions : 0;
+  v->counts = arena_format (arena, "%s; %s + %s + %s, %zu independent%s",
                             plural (arena, count->variables, "variable"),
                             plural (arena, count->balances, "balance"),
                             plural (arena, count->relations, "relation"),
-                            plural (arena, count->knowns, "known"), count->rank);
+                            plural (arena, count->knowns, "known"), count->rank,
+                            loose == 0 ? ""
+                            : arena_format (arena, ", %zu of them by last digits alone", loose));
   size_t equations = count->balances + count->relations + count->knowns;
   bool both = count->missing > 0 && count->surplus > 0;
   if (both && equations == count->variables) {
@@ -282,6 +285,7 @@ plant_verdict (struct evaluation *ev, const struct plant *plant, const struct ta
     if (plant->solution->count.missing > 0) {
       verdict_open (&m);
     }
+    verdict_loose (&m);
   }
   redundant_facts (&m);
   close_balance (&m);

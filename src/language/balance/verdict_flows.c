@@ -62,9 +62,8 @@ usual_units (struct verdict_maker *m, struct verdict_stream *streams)
   for (size_t s = 0; s < plant->stream_count; s++) {
     struct verdict_stream *one = &streams[s];
     double *shown = ARENA_ARRAY (m->arena, 2, double), *u = ARENA_ARRAY (m->arena, 2, double);
-    double total = plant->by_mass && m->solution->fixed_total[s]
-                   && m->solution->status != BALANCE_CONTRADICTORY ? plant_total (plant, s)
-                                                                  : one->molar_flow;
+    double total = plant->by_mass && plant_is_fixed (plant, s) ? plant_total (plant, s)
+                                                               : one->molar_flow;
     double mass_u = plant->whole || isnan (one->mass_flow) ? UNSTATED : mass_uncertainty (m, s);
     shown[0] = mass ? one->mass_flow / plant->unit->factor : total * m->per;
     shown[1] = mass ? total * 3.6 : one->mass_flow * 3600;

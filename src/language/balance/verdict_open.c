@@ -115,36 +115,43 @@ what_ties_them (struct verdict_maker *m)
   m->verdict->relations_left = text_list_done (&texts);
 }
 
-static void
-what_would_close_it (struct verdict_maker *m)
+const struct verdict_texts *
+verdict_sets (struct verdict_maker *m, size_t suggestion_count,
+              const struct suggestion suggestions[], const char *alone, size_t *count)
 {
-  const struct solution *s = m->solution;
   size_t groups = 0;
-  for (size_t i = 0; i < s->suggestion_count; i++) {
-    groups = s->suggestions[i].group >= groups ? s->suggestions[i].group + 1 : groups;
+  for (size_t i = 0; i < suggestion_count; i++) {
+    groups = suggestions[i].group >= groups ? suggestions[i].group + 1 : groups;
   }
   struct verdict_texts *sets = ARENA_ARRAY (m->arena, groups, struct verdict_texts);
-  size_t count = 0;
+  *count = 0;
   for (size_t g = 0; g < groups; g++) {
     struct text_list list = { NULL, 0, 0 };
-    for (size_t i = 0; i < s->suggestion_count; i++)
-      if (s->suggestions[i].group == g) {
-        text_list_add (m->arena, &list, quantity_text (m, &s->suggestions[i].quantity));
+    for (size_t i = 0; i < suggestion_count; i++)
+      if (suggestions[i].group == g) {
+        text_list_add (m->arena, &list, quantity_text (m, &suggestions[i].quantity));
       }
     if (list.count > 0) {
-      sets[count++] = text_list_done (&list);
+      sets[(*count)++] = text_list_done (&list);
     }
   }
-  for (size_t g = 0; g < count; g++) {
+  for (size_t g = 0; g < *count; g++) {
     struct text_list list = { NULL, 0, 0 };
     for (size_t i = 0; i < sets[g].count; i++) {
       text_list_add (m->arena, &list, sets[g].at[i]);
     }
-    verdict_fact (m, g > 0 ? "and one of" : count == 1 ? "any one closes it" : "one of",
+    verdict_fact (m, g > 0 ? "and one of" : *count == 1 ? alone : "one of",
                   text_list_joined (m->arena, &list));
   }
-  m->verdict->suggestions = sets;
-  m->verdict->suggestion_count = count;
+  return sets;
+}
+
+static void
+what_would_close_it (struct verdict_maker *m)
+{
+  const struct solution *s = m->solution;
+  m->verdict->suggestions = verdict_sets (m, s->suggestion_count, s->suggestions,
+                                          "any one closes it", &m->verdict->suggestion_count);
   struct text_list useless = { NULL, 0, 0 };
   for (size_t i = 0; i < s->useless_count; i++) {
     text_list_add (m->arena, &useless, quantity_text (m, &s->useless[i]));

@@ -38,6 +38,11 @@ bool verdict_streams (struct verdict_maker *, const struct target *) MUST_CHECK;
 bool verdict_flows (struct verdict_maker *, const struct target *,
                     struct verdict_stream streams[]) MUST_CHECK;
 void verdict_open (struct verdict_maker *);              /* verdict_open.c */
+/* Tells sets of what would help, ALONE the label of a single one; *COUNT of them.  */
+const struct verdict_texts *verdict_sets (struct verdict_maker *, size_t suggestion_count,
+                                          const struct suggestion suggestions[],
+                                          const char *alone, size_t *count);
+void verdict_loose (struct verdict_maker *);             /* verdict_loose.c */
 void verdict_clash (struct verdict_maker *);             /* verdict_clash.c */
 void verdict_reconciled (struct verdict_maker *);        /* verdict_reconciled.c */
 void verdict_moved (struct verdict_maker *);              /* verdict_moved.c */

@@ -51,14 +51,17 @@ fill_stream (struct verdict_maker *m, size_t s, struct verdict_stream *out)
   const struct solution *solution = m->solution;
   size_t n = plant->network.components;
   double *x = ARENA_ARRAY (m->arena, n, double), *u = ARENA_ARRAY (m->arena, n, double);
-  bool total = solution->fixed_total[s] && solution->status != BALANCE_CONTRADICTORY;
+  const struct loose *loose = solution->loose;
+  bool total = solution->fixed_total[s] && solution->status != BALANCE_CONTRADICTORY
+               && !(loose && loose->total[s]);
   out->name = plant->stream[s].name;
   out->molar_flow = total && !plant->by_mass ? plant_total (plant, s) : UNSTATED;
   out->mass_flow = plant_is_fixed (plant, s) ? plant_mass (plant, s) : UNSTATED;
   out->uncertainty = total ? uncertainty_of (m, s, n) : UNSTATED;
   for (size_t c = 0; c < n; c++) {
     bool fixed = solution->fixed_fraction[s * n + c]
-                 && solution->status != BALANCE_CONTRADICTORY;
+                 && solution->status != BALANCE_CONTRADICTORY
+                 && !(loose && loose->fraction[s * n + c]);
     x[c] = fixed && !plant->whole ? solution->fraction[s * n + c] : UNSTATED;
     x[c] = fabs (x[c]) < DBL_EPSILON ? 0 : x[c];         /* what subtraction leaves of nothing */
     u[c] = isnan (x[c]) ? UNSTATED : uncertainty_of (m, s, c);
@@ -154,9 +157,7 @@ verdict_streams (struct verdict_maker *m, const struct target *targets)
   v->stream_count = plant->stream_count;
   if (plant->by_mass) {
     for (size_t s = 0; s < plant->stream_count; s++) {
-      streams[s].mass_flow = m->solution->fixed_total[s]
-                             && m->solution->status != BALANCE_CONTRADICTORY
-                               ? plant_total (plant, s) : UNSTATED;
+      streams[s].mass_flow = plant_is_fixed (plant, s) ? plant_total (plant, s) : UNSTATED;
     }
   }
   if (!verdict_flows (m, targets, streams)) {
