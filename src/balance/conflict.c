@@ -16,6 +16,8 @@ enum { BASES = 25, MOST_PAIRS = 20000 };
 static const double no_multiplier = 1e-7;
 /* In standard deviations: two-sided probability 1e-4 of a normal distribution.  */
 static const double strong = 3.89;
+/* Half a last digit in the same.  */
+static const double half_digit = 1.7320508075688772;
 
 struct work {
   struct arena *keep, *arena;
@@ -37,7 +39,7 @@ struct work {
 static void
 look_at (struct work *work, const double y[])
 {
-  double *lambda = work->trial_lambda, gap = 0, most = 0, noise = 0, strength;
+  double *lambda = work->trial_lambda, gap = 0, most = 0, noise = 0, limit = 0, strength;
   size_t count = 0;
   memset (work->by_figure, 0, work->rows * sizeof *work->by_figure);
   memset (work->trial, 0, work->core->network->facts * sizeof *work->trial);
@@ -58,8 +60,10 @@ look_at (struct work *work, const double y[])
   }
   for (size_t i = 0; i < work->rows; i++) {
     noise += work->by_figure[i] * work->by_figure[i];
+    limit += half_digit * fabs (work->by_figure[i]);
   }
-  strength = fabs (gap) <= work->floor ? 0 : noise > 0 ? fabs (gap) / sqrt (noise) : 1e300;
+  limit = fmin (sqrt (noise), limit / strong);   /* out of chance, or of what digits allow at all */
+  strength = fabs (gap) <= work->floor ? 0 : limit > 0 ? fabs (gap) / limit : 1e300;
   if (count > 0 && (work->count == 0 || (strength >= strong && work->strength < strong)
                     || ((strength >= strong || work->strength < strong)
                         && (count < work->count

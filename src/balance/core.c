@@ -3,6 +3,7 @@
 
 #include <math.h>
 #include <string.h>
+#include "balance/moves.h"
 #include "balance/program.h"
 #include "balance/reduce.h"
 #include "balance/solution.h"
@@ -233,9 +234,8 @@ core_open (struct core *core)
   }
 }
 
-/* What the linear rows come to.  */
 static void
-reduce (struct core *core, const bool take[], size_t most)
+reduce_rows (struct core *core, const bool take[], size_t most)
 {
   core->system = system_make (core->arena, core->network, take, core->split);
   system_reduce (core->arena, core->system, REDUCE_CORE);
@@ -250,15 +250,38 @@ reduce (struct core *core, const bool take[], size_t most)
   core->surplus = core->system->surplus;
 }
 
+/* When does all go on with moved figures: where measured ones are still to come never, where only a
+   clash is asked for with what splits of unknown share need.                                    */
+enum moving { MOVE_NEVER, MOVE_FOR_BENDS, MOVE_ALWAYS };
+
+/* What the linear rows come to.  Where figures agree only within their digits, rows of the figures
+   as typed have other dependencies than those that hold: a share and a rest that do not add up to
+   one leave no flow at all.  So it is those of the moved figures that go on, if anything does.  */
+static void
+reduce (struct core *core, const bool take[], size_t most, enum moving moving)
+{
+  double p;
+  core->network = core->typed;
+  reduce_rows (core, take, most);
+  p = core->p;
+  if (core->moves && (moving == MOVE_ALWAYS
+                      || (moving == MOVE_FOR_BENDS && core->system->bends > 0))) {
+    core->network = network_moved (core->arena, core->system, core->figure, core->moves);
+    reduce_rows (core, take, most);
+    core->p = p;
+  }
+}
+
 /* The linear rows, with all splits that can be made linear, as long as the null space has no more
    than MOST entries; null: interrupted.                                                         */
 static struct core *
 core_linear (struct arena *arena, const struct network *network, const bool take[],
-             const struct solve_options *options, size_t most, struct fault *fault)
+             const struct solve_options *options, size_t most, enum moving moving,
+             struct fault *fault)
 {
   struct core *core = ARENA_NEW (arena, struct core);
   core->arena = arena;
-  core->network = network;
+  core->network = core->typed = network;
   core->options = options;
   core->split = ARENA_ARRAY (arena, network->boundaries + 1, struct split);
   for (size_t b = 0; b < network->boundaries; b++) {
@@ -269,7 +292,7 @@ core_linear (struct arena *arena, const struct network *network, const bool take
     if (!core_goes_on (options, fault)) {
       return NULL;
     }
-    reduce (core, take, most < modest ? most : modest);
+    reduce (core, take, most < modest ? most : modest, moving);
   } while (core->agree && core->system->bends > 0
            && core->freedom <= most / (core->system->columns + 1) && straighten (core));
   return core;
@@ -279,7 +302,7 @@ struct core *
 core_make (struct arena *arena, const struct network *network, const bool take[],
            const struct solve_options *options, struct fault *fault)
 {
-  struct core *core = core_linear (arena, network, take, options, (size_t) -1, fault);
+  struct core *core = core_linear (arena, network, take, options, (size_t) -1, MOVE_ALWAYS, fault);
   if (!core) {
     return NULL;
   }
@@ -291,7 +314,7 @@ struct core *
 core_outline (struct arena *arena, const struct network *network, const bool take[],
               const struct solve_options *options, struct fault *fault)
 {
-  return core_linear (arena, network, take, options, few, fault);
+  return core_linear (arena, network, take, options, few, MOVE_NEVER, fault);
 }
 
 bool
@@ -302,6 +325,6 @@ core_clashes (struct arena *arena, const struct network *network, const bool tak
   struct fault ignored;
   const struct core *core;
   fault_init (&ignored, arena);
-  core = core_linear (arena, network, take, options, most, &ignored);
+  core = core_linear (arena, network, take, options, most, MOVE_FOR_BENDS, &ignored);
   return core && !core->agree;
 }

@@ -1,10 +1,9 @@
 /* The rows of a network solved: do the facts agree, one solution, and all others.
 
-   Facts are typed with so many digits and no more, so they agree when changes within those digits
-   make them hold: the figures' changes in units of their rounding's standard deviation, with the
-   least sum of squares, are held against chi-square (see agree.c).  Splits of unknown share are
-   made linear where the composition of one of their streams comes out, else solved by damped
-   Newton steps (see bend.c).                                                                    */
+   Facts are typed with so many digits and no more, so they agree when moves within those digits
+   make them hold and none of these stands out (see agree.c).  All the rest is then that of the
+   figures so moved.  Splits of unknown share are made linear where the composition of one of their
+   streams comes out, else solved by damped Newton steps (see bend.c).                           */
 #ifndef BALANCE_CORE_H
 #define BALANCE_CORE_H
 
@@ -18,7 +17,8 @@ struct arena; struct fault; struct solve_options;
 
 struct core {
   struct arena *arena;           /* where its work lives */
-  const struct network *network;
+  const struct network *network; /* with the figures as they are counted */
+  const struct network *typed;   /* and as they are typed: the same where they need no moving */
   const struct solve_options *options;
   struct system *system;
   struct split *split;           /* by boundary */
@@ -29,6 +29,8 @@ struct core {
   double p;                      /* of as large a disagreement within the digits typed */
   const double *sigma;           /* by fact row: standard deviation of its residual, scaled */
   const size_t *figure;          /* by fact row: rows of one figure share a number */
+  const double *moves;           /* by that number: where the facts agree only within their digits,
+                                    how many standard deviations; else null */
   size_t roots;                  /* other solutions that bent splits allow: all there are when */
   double **root;                 /* nothing is open, else some of many */
 };
@@ -47,8 +49,7 @@ struct core *core_outline (struct arena *, const struct network *, const bool ta
 bool core_clashes (struct arena *, const struct network *, const bool take[],
                    const struct solve_options *);
 
-/* Do the facts agree?  Sets agree, p, sigma, figure and makes `v` the solution nearest to the
-   figures.                                                                                      */
+/* Do the facts agree?  Sets agree, p, sigma, figure, moves and makes `v` what goes with those.  */
 void core_agree (struct core *);
 /* Makes sure that the null space is there.  */
 void core_open (struct core *);

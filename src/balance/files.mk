@@ -4,8 +4,6 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/absent.c \
   %D%/absent.h \
   %D%/agree.c \
-  %D%/agree_sparse.c \
-  %D%/agree_sparse.h \
   %D%/bend.c \
   %D%/bounded.c \
   %D%/bounded.h \
@@ -36,6 +34,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/measured.h \
   %D%/minimise.c \
   %D%/minimise.h \
+  %D%/moves.c \
+  %D%/moves.h \
   %D%/network.c \
   %D%/network.h \
   %D%/program.c \

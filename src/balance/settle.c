@@ -94,7 +94,7 @@ static const struct network *
 with_flow (const struct core *core, size_t stream)
 {
   struct arena *arena = core->arena;
-  const struct network *network = core->network;
+  const struct network *network = core->typed;
   struct network *out = ARENA_NEW (arena, struct network);
   struct fact *facts = ARENA_ARRAY (arena, network->facts + 1, struct fact);
   struct term *terms = ARENA_ARRAY (arena, network->components, struct term);

@@ -4,6 +4,13 @@
 #   %C%_t_NAME_SOURCES = %D%/t_NAME.c
 #   %C%_t_NAME_LDADD = $(with_balance)
 
+suites += %D%/t_agree
+%C%_t_agree_SOURCES = \
+  %D%/plant.c \
+  %D%/plant.h \
+  %D%/t_agree.c
+%C%_t_agree_LDADD = $(with_balance)
+
 suites += %D%/t_conflict
 %C%_t_conflict_SOURCES = \
   %D%/plant.c \

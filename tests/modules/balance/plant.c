@@ -6,7 +6,7 @@
 #include <string.h>
 #include "support/arena.h"
 
-enum { MOST_BOUNDARIES = 40, MOST_FACTS = 200, MOST_REACTIONS = 8 };
+enum { MOST_BOUNDARIES = 60, MOST_FACTS = 200, MOST_REACTIONS = 8 };
 
 struct plant *
 plant_make (const char *names, size_t components)
