@@ -106,16 +106,26 @@ factor_solve (const struct factor *factor, struct arena *scratch, const double c
 }
 
 bool
-factor_spread (const struct factor *factor, struct arena *scratch, const double f[],
-               double spread[])
+factor_spread (const struct factor *factor, struct arena *arena, const struct sparse *forms,
+               size_t i, struct spread *spread)
 {
-  return factor->way->spread (factor, scratch, f, spread);
+  return factor->way->spread (factor, arena, forms, i, spread);
 }
 
-size_t
-factor_spread_size (const struct factor *factor)
+double
+spread_product (const struct spread *a, const struct spread *b)
 {
-  return factor->spread_size;
+  double product = 0;
+  for (size_t i = 0, k = 0; i < a->count && k < b->count;) {
+    if (a->place[i] == b->place[k]) {
+      product += a->part[i++] * b->part[k++];
+    } else if (a->place[i] < b->place[k]) {
+      i++;
+    } else {
+      k++;
+    }
+  }
+  return product;
 }
 
 void

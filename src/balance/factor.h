@@ -65,12 +65,18 @@ void factor_solve (const struct factor *, struct arena *scratch, const double c[
 size_t factor_open (const struct factor *);
 void factor_open_move (const struct factor *, struct arena *scratch, unsigned seed, double d[]);
 
-/* SPREAD (factor_spread_size places) such that the covariance of two linear forms is the scalar
-   product of their spreads, for measured rows of unit variance.  False if the form with gradient F
-   is not settled.  */
-size_t factor_spread_size (const struct factor *);
-bool factor_spread (const struct factor *, struct arena *scratch, const double f[],
-                    double spread[]) MUST_CHECK;
+/* Of a linear form, such that the covariance of two is the product of their spreads, for measured
+   rows of unit variance: the parts that are not zero, by ascending place.  */
+struct spread {
+  size_t count;
+  size_t *place;
+  double *part;
+};
+
+/* The spread of row I of FORMS, made in ARENA.  False if that form is not settled.  */
+bool factor_spread (const struct factor *, struct arena *, const struct sparse *forms, size_t i,
+                    struct spread *) MUST_CHECK;
+double spread_product (const struct spread *, const struct spread *);
 
 /* The variance of every measured row after the fit, of 1 before it: 1 where nothing else bears on
    it.  */

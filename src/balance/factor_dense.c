@@ -167,21 +167,27 @@ turn_gradient (const struct dense *dense, double x[])
 }
 
 static bool
-spread (const struct factor *factor, struct arena *scratch, const double f[], double out[])
+spread (const struct factor *factor, struct arena *arena, const struct sparse *forms, size_t i,
+        struct spread *out)
 {
   const struct dense *dense = (const struct dense *) factor;
   size_t n = factor->unknowns, q = factor->rank, r = dense->exact.rank;
-  double *x = ARENA_ARRAY (scratch, n, double);
-  for (size_t k = 0; k < n; k++) {
-    x[k] = f[k] * dense->scale[k];
+  double *x = ARENA_ARRAY (arena, n, double);
+  for (size_t k = forms->start[i]; k < forms->start[i + 1]; k++) {
+    x[forms->column[k]] += forms->coefficient[k] * dense->scale[forms->column[k]];
   }
   double size = norm_of (x, n);
   turn_gradient (dense, x);
   if (norm_of (x + r + q, n - r - q) > FACTOR_SETTLED * size) {
     return false;
   }
+  *out = (struct spread) { q, ARENA_ARRAY (arena, q + 1, size_t),
+                           ARENA_ARRAY (arena, q + 1, double) };
+  for (size_t k = 0; k < q; k++) {
+    out->place[k] = k;
+  }
   if (q > 0) {
-    basis_of_vectors (&dense->least, x + r, out);
+    basis_of_vectors (&dense->least, x + r, out->part);
   }
   return true;
 }
@@ -299,6 +305,6 @@ factor_make_dense (struct arena *arena, const struct linearised *equations)
   take_exact_apart (arena, equations, dense);
   take_measured_apart (arena, equations, dense);
   size_t rank = dense->settled.rank;
-  dense->head = (struct factor) { &dense_way, n, rank, n - dense->exact.rank - rank, rank };
+  dense->head = (struct factor) { &dense_way, n, rank, n - dense->exact.rank - rank };
   return &dense->head;
 }

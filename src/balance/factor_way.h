@@ -8,14 +8,15 @@ struct factor_way {
   void (*solve) (const struct factor *, struct arena *scratch, const double c[], const double e[],
                  double d[]);
   void (*open_move) (const struct factor *, struct arena *scratch, unsigned seed, double d[]);
-  bool (*spread) (const struct factor *, struct arena *scratch, const double f[], double spread[]);
+  bool (*spread) (const struct factor *, struct arena *, const struct sparse *forms, size_t i,
+                  struct spread *);
   void (*leverages) (const struct factor *, struct arena *scratch, double h[]);
 };
 
 /* Comes first in every way's own structure.  */
 struct factor {
   const struct factor_way *way;
-  size_t unknowns, rank, open, spread_size;
+  size_t unknowns, rank, open;
 };
 
 /* A pivot below this share of the largest is zero; of 2000 random sets of figures the smallest

@@ -84,47 +84,98 @@ adjust (const struct gross *g, const struct figure *figure, double h, struct adj
   }
 }
 
-/* Can the data tell figures I and J apart?  */
-static bool
-is_tie (struct gross *g, const struct adjustment at[], size_t i, size_t j)
+/* What is worked with to find ties: figures that count by z, and the other way round.  */
+struct by_z { double z; size_t figure; };
+struct ties {
+  struct adjustment *at;
+  const size_t *row;             /* by figure: in the tangent */
+  struct by_z *sorted;
+  size_t count;
+};
+
+static int
+by_z (const void *a, const void *b)
 {
-  if (!(at[i].z > LEAST_Z) || !(fabs (at[i].z - at[j].z) < EQUAL_Z * at[i].z)) {
+  const struct by_z *left = a, *right = b;
+  if (left->z < right->z || left->z > right->z) {
+    return left->z < right->z ? -1 : 1;
+  }
+  return (left->figure > right->figure) - (left->figure < right->figure);
+}
+
+/* Can the data tell two figures of the same z apart?  */
+static bool
+is_tie (struct gross *g, const struct ties *ties, const struct spread *one, size_t other)
+{
+  const struct sparse *rows = &g->fit->tangent.equations.measured;
+  struct spread two;
+  if (!factor_spread (g->fit->factor, g->scratch, rows, ties->row[other], &two)) {
     return false;
   }
-  const struct factor *factor = g->fit->factor;
-  size_t places = factor_spread_size (factor);
-  double *spread[2], square[2] = { 0, 0 }, product = 0;
-  for (size_t k = 0; k < 2; k++) {
-    double *f = gradient_make (g->scratch, g->measured), u = at[k == 0 ? i : j].stated_u;
-    spread[k] = ARENA_ARRAY (g->scratch, places + 1, double);
-    figure_gradient (g->measured, &g->measured->figure[k == 0 ? i : j], g->fit->v, 1 / u, f);
-    if (!factor_spread (factor, g->scratch, f, spread[k])) {
+  double square = (1 - spread_product (one, one)) * (1 - spread_product (&two, &two));
+  return fabs (spread_product (one, &two)) > (1 - PARALLEL) * sqrt (square);
+}
+
+/* Ties those of the same z, from place FROM to TO by z, with figure I where they stand behind
+   it.  */
+static bool
+tie_with (struct gross *g, const struct ties *ties, size_t i, size_t from, size_t to, size_t tie)
+{
+  const struct sparse *rows = &g->fit->tangent.equations.measured;
+  struct spread one;
+  bool tied = false, known = false;
+  for (size_t k = from; k < to; k++) {
+    size_t j = ties->sorted[k].figure;
+    if (j <= i || ties->at[j].tie > 0) {
+      continue;
+    }
+    if (!known && !factor_spread (g->fit->factor, g->scratch, rows, ties->row[i], &one)) {
       return false;
     }
-  }
-  for (size_t k = 0; k < places; k++) {
-    square[0] += spread[0][k] * spread[0][k];
-    square[1] += spread[1][k] * spread[1][k];
-    product += spread[0][k] * spread[1][k];
+    known = true;
+    if (is_tie (g, ties, &one, j)) {
+      ties->at[j].tie = tie;
+      tied = true;
+    }
   }
   arena_reset (g->scratch);
-  return fabs (product) > (1 - PARALLEL) * sqrt ((1 - square[0]) * (1 - square[1]));
+  return tied;
 }
 
 static void
 tie_equals (struct gross *g, struct adjustment at[])
 {
-  size_t ties = 0, n = g->measured->figures;
-  for (size_t i = 0; i < n; i++) {
-    bool tied = false;
-    for (size_t j = i + 1; j < n && at[i].tie == 0; j++) {
-      if (at[j].tie == 0 && is_tie (g, at, i, j)) {
-        at[j].tie = ties + 1;
-        tied = true;
-      }
+  size_t count = 0, n = g->measured->figures;
+  struct arena *work = arena_create ();
+  size_t *row = ARENA_ARRAY (work, n + 1, size_t), *place = ARENA_ARRAY (work, n + 1, size_t);
+  struct ties ties = { at, row, ARENA_ARRAY (work, n + 1, struct by_z), 0 };
+  for (size_t r = 0; r < g->fit->rows; r++) {
+    size_t i = g->fit->tangent.figure[r];
+    row[i] = r;
+    if (at[i].z > LEAST_Z) {
+      ties.sorted[ties.count++] = (struct by_z) { at[i].z, i };
     }
-    at[i].tie = tied ? ++ties : at[i].tie;
   }
+  qsort (ties.sorted, ties.count, sizeof *ties.sorted, by_z);
+  for (size_t k = 0; k < ties.count; k++) {
+    place[ties.sorted[k].figure] = k;
+  }
+  for (size_t i = 0; i < n; i++) {
+    size_t from = place[i], to = place[i] + 1;
+    if (at[i].tie > 0 || !(at[i].z > LEAST_Z)) {
+      continue;
+    }
+    while (from > 0 && at[i].z - ties.sorted[from - 1].z < EQUAL_Z * at[i].z) {
+      from--;
+    }
+    while (to < ties.count && ties.sorted[to].z - at[i].z < EQUAL_Z * at[i].z) {
+      to++;
+    }
+    if (tie_with (g, &ties, i, from, to, count + 1)) {
+      at[i].tie = ++count;
+    }
+  }
+  arena_destroy (work);
 }
 
 /* One for each figure, in their order.  *CRITICAL: for the redundant ones.  */

@@ -330,30 +330,3 @@ gradient_make (struct arena *arena, const struct measured *measured)
 {
   return ARENA_ARRAY (arena, measured->unknowns, double);
 }
-
-/* The gradient of a form times FACTOR, added to F.  */
-static void
-form_gradient (const struct measured *measured, const struct form *form, double factor, double f[])
-{
-  for (size_t i = 0; i < form->count; i++) {
-    size_t k = measured->unknown[form->terms[i].column];
-    if (k != NOWHERE) {
-      f[k] += factor * form->terms[i].coefficient;
-    }
-  }
-}
-
-/* d (closure left / right).  */
-void
-figure_gradient (const struct measured *measured, const struct figure *figure, const double v[],
-                 double factor, double f[])
-{
-  double right = figure->right.count > 0 ? form_value (&figure->right, v) : 1;
-  double ratio = form_value (&figure->left, v) / right;
-  double closure = figure->closure == NOWHERE ? 1 : v[figure->closure];
-  form_gradient (measured, &figure->left, factor * closure / right, f);
-  form_gradient (measured, &figure->right, -factor * closure * ratio / right, f);
-  if (figure->closure != NOWHERE) {
-    f[measured->unknown[figure->closure]] += factor * ratio;
-  }
-}

@@ -57,9 +57,9 @@ bool figure_is_void (const struct measured *, const struct figure *);
 
 /* The figure at a point, and what it is made of (RIGHT 1 where there is none).  */
 double figure_value (const struct figure *, const double v[]);
-/* Its gradient times FACTOR, added to F, by unknown.  */
-void figure_gradient (const struct measured *, const struct figure *, const double v[],
-                      double factor, double f[]);
+/* Its gradient times FACTOR as one more row of ROWS, by unknown; there must be room.  */
+void figure_row (const struct measured *, const struct figure *, const double v[], double factor,
+                 struct sparse *rows);
 /* A new gradient, all zero.  */
 double *gradient_make (struct arena *, const struct measured *) MUST_CHECK;
 

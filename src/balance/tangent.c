@@ -71,22 +71,29 @@ add_start_row (const struct measured *measured, const struct figure *figure, con
   return weight * (figure->closed_y * (ratio ? right : 1) - left);
 }
 
+/* d (closure left / right).  */
+void
+figure_row (const struct measured *measured, const struct figure *figure, const double v[],
+            double factor, struct sparse *rows)
+{
+  double right = figure->right.count > 0 ? form_value (&figure->right, v) : 1;
+  double ratio = form_value (&figure->left, v) / right;
+  double closure = figure->closure == NOWHERE ? 1 : v[figure->closure];
+  sparse_begin (rows);
+  add_form (measured, &figure->left, factor * closure / right, rows);
+  add_form (measured, &figure->right, -factor * closure * ratio / right, rows);
+  if (figure->closure != NOWHERE) {
+    sparse_add (rows, measured->unknown[figure->closure], factor * ratio);
+  }
+}
+
 /* The row of a figure and what it is short of, both over u.  */
 static double
 add_figure_row (const struct measured *measured, const struct figure *figure, const double v[],
                 struct sparse *G)
 {
-  double left = form_value (&figure->left, v);
-  double right = figure->right.count > 0 ? form_value (&figure->right, v) : 1;
-  double closure = figure->closure == NOWHERE ? 1 : v[figure->closure];
-  double weight = 1 / (figure->u * right), ratio = left / right;
-  sparse_begin (G);
-  add_form (measured, &figure->left, weight * closure, G);
-  add_form (measured, &figure->right, -weight * closure * ratio, G);
-  if (figure->closure != NOWHERE) {
-    sparse_add (G, measured->unknown[figure->closure], ratio / figure->u);
-  }
-  return (figure->y - closure * ratio) / figure->u;
+  figure_row (measured, figure, v, 1 / figure->u, G);
+  return (figure->y - figure_value (figure, v)) / figure->u;
 }
 
 /* At the start every flow is measured, ever so weakly, as what it is now: what the figures leave

@@ -105,15 +105,15 @@ solution_uncertainty (const struct solution *solution, const struct network *net
   const struct form none = { 0, NULL };
   struct figure figure = { .left = *left, .right = right ? *right : none, .closure = NOWHERE };
   struct arena *scratch = arena_create ();
-  size_t places = factor_spread_size (covariance->factor);
-  double *f = gradient_make (scratch, covariance->measured), u = (double) NAN;
-  double *spread = ARENA_ARRAY (scratch, places + 1, double);
+  struct sparse row = sparse_make (scratch, 1, left->count + figure.right.count);
+  struct spread spread;
+  double u = (double) NAN;
   bool nothing = right && !(fabs (form_value (right, covariance->v)) > 0);
   if (!nothing) {
-    figure_gradient (covariance->measured, &figure, covariance->v, 1, f);
+    figure_row (covariance->measured, &figure, covariance->v, 1, &row);
   }
-  if (!nothing && factor_spread (covariance->factor, scratch, f, spread)) {
-    u = vector_norm (places, spread);
+  if (!nothing && factor_spread (covariance->factor, scratch, &row, 0, &spread)) {
+    u = sqrt (spread_product (&spread, &spread));
   }
   arena_destroy (scratch);
   return u;

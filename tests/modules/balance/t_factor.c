@@ -86,17 +86,16 @@ compare_spreads (struct arena *arena, const struct factor *dense, const struct f
     CHECK (h[0][i] >= 0 && h[0][i] < 1 + 1e-12);
   }
   for (size_t j = 0; j < UNKNOWNS; j++) {
-    double f[UNKNOWNS] = { 0 }, sum[2] = { 0, 0 };
     const struct factor *ways[2] = { dense, sparse };
+    struct sparse form = sparse_make (arena, 1, 1);
+    double sum[2] = { 0, 0 };
     bool settled[2];
-    f[j] = 1;
+    sparse_begin (&form);
+    sparse_add (&form, j, 1);
     for (size_t way = 0; way < 2; way++) {
-      size_t places = factor_spread_size (ways[way]);
-      double *spread = ARENA_ARRAY (arena, places + 1, double);
-      settled[way] = factor_spread (ways[way], arena, f, spread);
-      for (size_t k = 0; k < places; k++) {
-        sum[way] += spread[k] * spread[k];
-      }
+      struct spread spread;
+      settled[way] = factor_spread (ways[way], arena, &form, 0, &spread);
+      sum[way] = settled[way] ? spread_product (&spread, &spread) : 0;
     }
     SAME_INT (settled[0], settled[1]);
     if (settled[0] && settled[1]) {
