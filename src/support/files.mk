@@ -34,6 +34,8 @@ noinst_LIBRARIES += %D%/libsupport.a
   %D%/search_point.c \
   %D%/search_point.h \
   %D%/search_settle.c \
+  %D%/seen.c \
+  %D%/seen.h \
   %D%/statistics.c \
   %D%/statistics.h \
   %D%/sum.h \

@@ -107,6 +107,7 @@ plant_read_spread (struct reader_state *r, plant_line_reader *read, const void *
   sub.describe = true;
   sub.sources = NULL;
   sub.source_count = sub.source_room = 0;
+  sub.sources_seen = (struct seen) { 0 };
   r->ev = &sub;
   bool done = read (r, line);
   r->ev = ev;

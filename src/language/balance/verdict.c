@@ -13,10 +13,9 @@
 void
 text_list_add (struct arena *arena, struct text_list *list, const char *text)
 {
-  for (size_t i = 0; i < list->count; i++)
-    if (strcmp (list->at[i], text) == 0) {
-      return;
-    }
+  if (!seen_add (arena, &list->seen, text, strlen (text))) {
+    return;
+  }
   list->at = room_for_one (arena, list->at, list->count, &list->room, sizeof *list->at);
   list->at[list->count++] = text;
 }
@@ -197,7 +196,7 @@ static void
 redundant_facts (struct verdict_maker *m)
 {
   const struct plant *plant = m->plant;
-  struct text_list lines = { NULL, 0, 0 }, shown = { NULL, 0, 0 };
+  struct text_list lines = { .at = NULL }, shown = { .at = NULL };
   for (size_t i = 0; i < m->solution->redundant_count; i++) {
     const struct plant_fact *f = &plant->fact[m->solution->redundant[i]];
     text_list_add (m->arena, &lines, f->text);
@@ -216,7 +215,7 @@ redundant_facts (struct verdict_maker *m)
 static void
 negative_flows (struct verdict_maker *m)
 {
-  struct text_list names = { NULL, 0, 0 };
+  struct text_list names = { .at = NULL };
   const struct plant *plant = m->plant;
   size_t n = plant->network.components;
   for (size_t i = 0; i < m->solution->negative_count; i++) {

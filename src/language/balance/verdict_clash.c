@@ -64,7 +64,7 @@ static void
 tell_line (struct verdict_maker *m, const struct conflict *conflict, size_t first)
 {
   const struct plant_fact *f = &m->plant->fact[conflict->suspects[first].fact];
-  struct text_list needed = { NULL, 0, 0 };
+  struct text_list needed = { .at = NULL };
   bool plausible = false;
   for (int wanted = 1; wanted >= 0; wanted--)
     for (size_t i = first; i < conflict->count; i++) {
@@ -103,7 +103,7 @@ verdict_clash (struct verdict_maker *m)
 {
   const struct conflict *conflict = m->solution->conflict;
   struct balance_verdict *v = m->verdict;
-  struct text_list lines = { NULL, 0, 0 };
+  struct text_list lines = { .at = NULL };
   struct verdict_suspect *suspects = ARENA_ARRAY (m->arena, conflict->count,
                                                   struct verdict_suspect);
   size_t count = 0;

@@ -89,7 +89,7 @@ static bool
 told_flow (struct verdict_maker *m, struct evaluation *quiet, const struct value *value,
            const struct target *target, double *out)
 {
-  struct figures figures = { NULL, 0, 0 };
+  struct figures figures = { .at = NULL };
   if (!told_in (quiet, m->plant, value, target, &figures)) {
     fault_set_at (m->ev->fault, quiet->fault->kind, target->at, quiet->fault->fact[0],
                   quiet->fault->fact[1]);
@@ -211,7 +211,7 @@ heading_of (struct arena *arena, const struct target *t)
 static bool
 tell_basis (struct verdict_maker *m, const struct target *targets, const char *const units[])
 {
-  struct figures figures = { NULL, 0, 0 };
+  struct figures figures = { .at = NULL };
   struct value value;
   const char *first = first_value (m->ev, m->plant, &value);
   const char **basis = ARENA_ARRAY (m->arena, m->verdict->unit_count, const char *);

@@ -26,7 +26,7 @@ unit_of (const struct verdict_maker *m, const struct quantity *q)
 static void
 tell_ends (struct verdict_maker *m, const struct loose *loose)
 {
-  struct text_list names = { NULL, 0, 0 };
+  struct text_list names = { .at = NULL };
   struct verdict_loose *list = ARENA_ARRAY (m->arena, loose->count, struct verdict_loose);
   for (size_t i = 0; i < loose->count; i++) {
     const struct loose_end *end = &loose->ends[i];

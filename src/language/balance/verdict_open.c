@@ -23,7 +23,7 @@ static void
 what_is_fixed (struct verdict_maker *m)
 {
   const struct plant *plant = m->plant;
-  struct text_list all = { NULL, 0, 0 }, gases = all, json = all, open = all;
+  struct text_list all = { .at = NULL }, gases = all, json = all, open = all;
   for (size_t s = 0; s < plant->stream_count; s++) {
     const char *name = plant->stream[s].name;
     const char *flow = arena_format (m->arena, "flow of %s", name);
@@ -92,7 +92,7 @@ how_far (struct verdict_maker *m)
 static void
 what_ties_them (struct verdict_maker *m)
 {
-  struct text_list texts = { NULL, 0, 0 };
+  struct text_list texts = { .at = NULL };
   for (size_t i = 0; i < m->solution->left_count; i++) {
     const struct relation_left *left = &m->solution->left[i];
     const char *text = NULL;
@@ -126,7 +126,7 @@ verdict_sets (struct verdict_maker *m, size_t suggestion_count,
   struct verdict_texts *sets = ARENA_ARRAY (m->arena, groups, struct verdict_texts);
   *count = 0;
   for (size_t g = 0; g < groups; g++) {
-    struct text_list list = { NULL, 0, 0 };
+    struct text_list list = { .at = NULL };
     for (size_t i = 0; i < suggestion_count; i++)
       if (suggestions[i].group == g) {
         text_list_add (m->arena, &list, quantity_text (m, &suggestions[i].quantity));
@@ -136,7 +136,7 @@ verdict_sets (struct verdict_maker *m, size_t suggestion_count,
     }
   }
   for (size_t g = 0; g < *count; g++) {
-    struct text_list list = { NULL, 0, 0 };
+    struct text_list list = { .at = NULL };
     for (size_t i = 0; i < sets[g].count; i++) {
       text_list_add (m->arena, &list, sets[g].at[i]);
     }
@@ -152,7 +152,7 @@ what_would_close_it (struct verdict_maker *m)
   const struct solution *s = m->solution;
   m->verdict->suggestions = verdict_sets (m, s->suggestion_count, s->suggestions,
                                           "any one closes it", &m->verdict->suggestion_count);
-  struct text_list useless = { NULL, 0, 0 };
+  struct text_list useless = { .at = NULL };
   for (size_t i = 0; i < s->useless_count; i++) {
     text_list_add (m->arena, &useless, quantity_text (m, &s->useless[i]));
   }

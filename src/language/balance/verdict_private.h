@@ -17,8 +17,8 @@ struct verdict_maker {
   const char *unit;                        /* ... in this */
 };
 
-/* A growing list of texts.  */
-struct text_list { const char **at; size_t count, room; };
+/* A growing list of texts, each once.  */
+struct text_list { const char **at; size_t count, room; struct seen seen; };
 void text_list_add (struct arena *, struct text_list *, const char *);
 struct verdict_texts text_list_done (const struct text_list *);
 /* "a, b, c".  */

@@ -108,7 +108,7 @@ static struct text_list
 standing_out (const struct verdict_maker *m, double *z)
 {
   const struct solution *s = m->solution;
-  struct text_list names = { NULL, 0, 0 };
+  struct text_list names = { .at = NULL };
   *z = 0;
   for (size_t i = 0; i < s->adjustment_count; i++)
     if (s->adjustments[i].class == FIGURE_REDUNDANT) {
@@ -211,7 +211,7 @@ tell_eliminations (struct verdict_maker *m)
 static void
 tell_by_digits (struct verdict_maker *m)
 {
-  struct text_list lines = { NULL, 0, 0 };
+  struct text_list lines = { .at = NULL };
   for (size_t f = 0; m->solution->by_digits && f < m->plant->fact_count; f++)
     if (m->solution->by_digits[f]) {
       text_list_add (m->arena, &lines, m->plant->fact[f].words);
@@ -220,7 +220,7 @@ tell_by_digits (struct verdict_maker *m)
     result_remark (m->ev->result, MESSAGE_TAKEN_DIGITS, text_list_joined (m->arena, &lines), NULL);
   }
   if (m->solution->held_count > 0 && m->ev->result) {
-    struct text_list held = { NULL, 0, 0 };
+    struct text_list held = { .at = NULL };
     size_t n = m->plant->network.components;
     for (size_t i = 0; i < m->solution->held_count; i++)
       if (m->solution->held[i] < n * m->plant->stream_count) {

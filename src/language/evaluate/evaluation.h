@@ -14,6 +14,7 @@
 #include "language/evaluate/value.h"
 #include "support/check.h"
 #include "support/fault.h"
+#include "support/seen.h"
 
 struct arena; struct calorific_moves; struct definition; struct eos_state;
 struct flammable_limits; struct result; struct session; struct worked; struct workings;
@@ -84,6 +85,7 @@ struct evaluation {
   size_t assumption_count, assumption_room, source_count, source_room, used_count, used_room;
   struct assumption *assumptions;           /* what was taken, each once */
   struct source *sources;                   /* uncertain figures met, each once */
+  struct seen sources_seen;                 /* by the address of what they belong to */
   struct definition **used;                 /* definitions met, each once */
 };
 

@@ -10,10 +10,9 @@ evaluation_source (struct evaluation *ev, const struct source *source)
   if (!ev->describe) {
     return;
   }
-  for (size_t i = 0; i < ev->source_count; i++)
-    if (ev->sources[i].what == source->what) {
-      return;
-    }
+  if (!seen_add (ev->arena, &ev->sources_seen, &source->what, sizeof source->what)) {
+    return;
+  }
   ev->sources = room_for_one (ev->arena, ev->sources, ev->source_count, &ev->source_room,
                               sizeof *ev->sources);
   ev->sources[ev->source_count++] = *source;

@@ -48,6 +48,10 @@ suites += %D%/t_search_settle
 %C%_t_search_settle_SOURCES = %D%/t_search_settle.c
 %C%_t_search_settle_LDADD = $(with_support)
 
+suites += %D%/t_seen
+%C%_t_seen_SOURCES = %D%/t_seen.c
+%C%_t_seen_LDADD = $(with_support)
+
 suites += %D%/t_statistics
 %C%_t_statistics_SOURCES = %D%/t_statistics.c
 %C%_t_statistics_LDADD = $(with_support)
