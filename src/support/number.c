@@ -209,6 +209,17 @@ number_digits (const char *figure)
   return digits;
 }
 
+double
+number_rounding (const char *figure, double value)
+{
+  static const double whole_most = 0.005;
+  const struct number_digits digits = number_digits (figure);
+  const bool whole = !digits.point && digits.place >= 0 && fabs (value) > 0;
+
+  return whole ? fmin (0.5 * pow (10, digits.place + digits.end_zeros), whole_most * fabs (value))
+               : 0.5 * pow (10, digits.place);
+}
+
 /* Writing.  */
 
 enum {

@@ -19,6 +19,12 @@ bool number_read (const char *bytes, size_t n, double *value, bool *too_large) M
 struct number_digits { int place, end_zeros; bool point; };
 struct number_digits number_digits (const char *figure);
 
+/* What VALUE, typed as FIGURE, is good to if nobody says: half a unit of its last digit.  People
+   round to tens and hundreds and type exact whole numbers too, so of a whole number the zeros at
+   the end do not count as digits, and it is good to 0.5 % at the worst: with three digits rounded
+   that is always true.                                                                          */
+double number_rounding (const char *figure, double value);
+
 /* Appends VALUE in the shortest form of %.15g, %.16g, %.17g that reads back equal.  */
 void number_write_exact (struct text *, double value);
 

@@ -13,20 +13,11 @@
 #include "support/number.h"
 #include "units/constants.h"
 
-/* Whole numbers are typed as exact ones are (100 kmol/h, a share of 10 %): their digits say little
-   of what they are good to, and never more than this part of them.                              */
-static const double whole_most = 0.005;
-
 double
 digits_rounding (const struct node *figure)
 {
-  if (!figure || !figure->figure || !*figure->figure) {
-    return 0;
-  }
-  struct number_digits digits = number_digits (figure->figure);
-  double half = 0.5 * pow (10, digits.place);
-  double cap = whole_most * fabs (figure->number);
-  return !digits.point && cap > 0 ? fmin (half, cap) : half;
+  return figure && figure->figure && *figure->figure
+           ? number_rounding (figure->figure, figure->number) : 0;
 }
 
 /* The gas a volume is one of, as far as it is known.  */

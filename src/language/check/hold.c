@@ -11,17 +11,17 @@
 
 /* ---- The claim ---- */
 
-/* A figure without ± is good to half its last typed digit, end zeros of a whole number uncounted,
-   and to 0.5 % at most.                                                                         */
+/* A figure without ± is good to what its digits say (number_rounding), and to 0.5 % at most however
+   few they are: one of a digit or two would else have readings that fit by chance.  Balances have
+   no such limit: of figures that check each other none is to be taken for better than it is typed,
+   or they would clash without a mistake.                                                        */
 static double
 rounding (const struct node *claim)
 {
   static const double most = 0.005;
-  struct number_digits digits = number_digits (claim->figure ? claim->figure : "");
+  double half = number_rounding (claim->figure ? claim->figure : "", claim->number);
   double cap = most * fabs (claim->number);
-  int zeros = !digits.point && cap > 0 ? digits.end_zeros : 0;
-  double half = 0.5 * pow (10, digits.place + zeros);
-  return cap > 0 && cap < half ? cap : half;
+  return cap > 0 ? fmin (half, cap) : half;
 }
 
 /* The standard uncertainty behind ±, in the claim's unit; 0 where there is none.  */

@@ -378,6 +378,22 @@ how_it_is_typed (void)
   CHECK (number_digits ("1e99999999999").place > 308);
 }
 
+/* Half a last digit by hand; 0.5 % where a whole number's zeros at the end leave it worse.  */
+static void
+what_it_is_good_to (void)
+{
+  static const struct { const char *typed; double value, half; } rows[] = {
+    { "1057", 1057, 0.5 }, { "3380", 3380, 5 }, { "21800", 21800, 50 }, { "2_200", 2200, 11 },
+    { "850", 850, 4.25 }, { "100", 100, 0.5 }, { "97", 97, 0.485 }, { "3", 3, 0.015 },
+    { "3.2", 3.2, 0.05 }, { "0.50", 0.5, 0.005 }, { "58.", 58, 0.5 }, { "1.5e3", 1500, 50 },
+    { "15e3", 15000, 75 }, { "5e-1", 0.5, 0.05 }, { "0", 0, 0.5 }, { "0.0", 0, 0.05 }
+  };
+  for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+    test_about ("%s", rows[i].typed);
+    NEAR (number_rounding (rows[i].typed, rows[i].value), rows[i].half, 1e-14);
+  }
+}
+
 static const struct test_case cases[] = {
   { "good numbers", good_numbers },
   { "what is no number", what_is_no_number },
@@ -392,6 +408,7 @@ static const struct test_case cases[] = {
   { "exact as printf, and back", exact_as_printf_and_back },
   { "exact figures", exact_figures },
   { "how it is typed", how_it_is_typed },
+  { "what it is good to", what_it_is_good_to },
   { "the same in every locale", the_same_in_every_locale },
   { NULL, NULL }
 };
