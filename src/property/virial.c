@@ -7,6 +7,7 @@
 #include "gas/species.h"
 #include "property/figures.h"
 #include "property/property_tables.h"
+#include "support/arena.h"
 #include "support/fault.h"
 #include "support/sum.h"
 #include "units/constants.h"
@@ -87,7 +88,10 @@ has_constants (const struct species *s, struct fault *fault)
   if (!isnan (s->critical_temperature) && !isnan (s->critical_pressure)
       && !isnan (s->acentric_factor))
     return true;
-  return fault_set (fault, MESSAGE_MODEL_LACKS, "the second virial coefficient", s->key);
+  fault_set (fault, MESSAGE_MODEL_LACKS, "the second virial coefficient", s->key);
+  fault_hint (fault, "it needs the critical point and the acentric factor of each part, or for one "
+              "alone a row of your own in virial.tsv (option --tables)");
+  return false;
 }
 
 static bool
@@ -108,21 +112,63 @@ pure_coefficient (const struct figures_row *row, const struct species *s, double
   return true;
 }
 
-/* The terms 2 x_i x_j B_ij of part I with the parts before it.  */
+/* B_ij of the parts I and J of a gas.  */
 static bool
-add_pairs (const struct composition *gas, size_t i, double T, struct sum *sum,
-           struct fault *fault)
+pair_coefficient (const struct composition *gas, size_t i, size_t j, double T, double *B,
+                  struct fault *fault)
 {
-  for (size_t j = 0; j < i; j++) {
-    if (!(gas->fraction[i] > 0 && gas->fraction[j] > 0))
-      continue;
-    if (!has_constants (gas->species[i], fault) || !has_constants (gas->species[j], fault))
-      return false;
-    struct constants a = constants_of (gas->species[i]), b = constants_of (gas->species[j]);
-    struct constants pair = constants_of_pair (&a, &b);
-    sum_add (sum, 2 * gas->fraction[i] * gas->fraction[j] * estimate (&pair, T));
+  if (!has_constants (gas->species[i], fault) || !has_constants (gas->species[j], fault))
+    return false;
+  struct constants a = constants_of (gas->species[i]), b = constants_of (gas->species[j]);
+  struct constants pair = constants_of_pair (&a, &b);
+  *B = estimate (&pair, T);
+  return true;
+}
+
+/* b_i = sum_j x_j B_ij of every part that is there, B_ii in PURE.  */
+static bool
+beside_all (const struct composition *gas, double T, const double pure[], double b[],
+            struct fault *fault)
+{
+  for (size_t i = 0; i < gas->count; i++) {
+    struct sum sum = { gas->fraction[i] * pure[i], 0 };
+    for (size_t j = 0; j < gas->count && gas->fraction[i] > 0; j++) {
+      double B = 0;
+      if (j == i || !(gas->fraction[j] > 0))
+        continue;
+      if (!pair_coefficient (gas, i, j, T, &B, fault))
+        return false;
+      sum_add (&sum, gas->fraction[j] * B);
+    }
+    b[i] = sum_total (&sum);
   }
   return true;
+}
+
+static void
+record (struct workings *workings, const struct figures *figures, const struct composition *gas,
+        const double pure[], const double b[], const struct second_virial *virial)
+{
+  static const char tsonopoulos[] = "C. Tsonopoulos, AIChE J. 20 (1974) 263, eqs. 3 to 5";
+  static const char pairs[] = "sum over all parts j of x_j B_ij; B_ij by Tsonopoulos (1974), J. M. "
+                              "Prausnitz, R. D. Gunn, AIChE J. 4 (1958) 430";
+  if (workings == NULL)
+    return;
+  const size_t n = gas->count;
+  const char **terms = ARENA_ARRAY (workings->arena, n, const char *);
+  const char **sources = ARENA_ARRAY (workings->arena, n, const char *);
+  for (size_t i = 0; i < n; i++) {
+    const struct figures_row *row = figures_of (figures, gas->species[i]);
+    terms[i] = gas->species[i]->key;
+    sources[i] = row != NULL ? row->source : tsonopoulos;
+  }
+  workings_add (workings, &(struct step) {
+      .name = "second virial coefficient", .formula = "B = sum(x_i b_i)", .value = virial->value,
+      .unit = "m3/mol", .source = "the statistical mechanics of mixtures: exact",
+      .term_count = (unsigned) n, .terms = terms,
+      STEP_COLUMNS ({ "x_i", gas->fraction, "mol/mol", NULL, NULL },
+                    { "B_ii", pure, "m3/mol", NULL, sources },
+                    { "b_i", b, "m3/mol", n > 1 ? pairs : NULL, NULL }) });
 }
 
 bool
@@ -131,32 +177,30 @@ second_virial_of_gas (struct property_tables *tables, const struct composition *
                       struct fault *fault)
 {
   struct finding found = { { 0, NULL, NULL }, 0, 0 };
-  struct sum sum = { 0, 0 };
   if (!(isfinite (T) && T > 0))
     return fault_set (fault, MESSAGE_RANGE, "an absolute temperature is above zero", NULL);
   const struct figures *figures = property_tables_read (tables, PROPERTY_TABLE_VIRIAL, TERMS,
-                                                       columns,
-                                                        fault);
+                                                        columns, fault);
   if (figures == NULL)
     return false;
+  double *pure = ARENA_ARRAY (fault->arena, gas->count, double);
+  double *b = ARENA_ARRAY (fault->arena, gas->count, double);
+  struct sum sum = { 0, 0 };
   for (size_t i = 0; i < gas->count; i++) {
     const struct species *s = gas->species[i];
-    double x = gas->fraction[i], B = 0;
-    if (!(x > 0))
-      continue;
-    if (!pure_coefficient (figures_of (figures, s), s, x, T, &found, &B, fault)
-        || !add_pairs (gas, i, T, &sum, fault))
+    if (gas->fraction[i] > 0
+        && !pure_coefficient (figures_of (figures, s), s, gas->fraction[i], T, &found, &pure[i],
+                              fault))
       return false;
-    sum_add (&sum, x * x * B);
   }
+  if (!beside_all (gas, T, pure, b, fault))
+    return false;
+  for (size_t i = 0; i < gas->count; i++)
+    sum_add (&sum, gas->fraction[i] * b[i]);
   found.virial.value = sum_total (&sum);
   if (!isfinite (found.virial.value))
     return fault_set (fault, MESSAGE_NOT_FINITE, NULL, NULL);
-  workings_add (workings, &(struct step) {
-      .name = "second virial coefficient", .formula = "B = sum_i sum_j x_i x_j B_ij",
-      .solved = "added up over all pairs", .value = found.virial.value, .unit = "m3/mol",
-      .source = found.virial.estimated == NULL && gas->count == 1 ? "tables/virial.tsv"
-                : "tables/virial.tsv; pairs: C. Tsonopoulos, AIChE J. 20 (1974) 263" });
+  record (workings, figures, gas, pure, b, &found.virial);
   *virial = found.virial;
   return true;
 }

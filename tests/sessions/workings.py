@@ -110,6 +110,8 @@ speed of sound of raw at 20 degC, 5 bar(a), ideal
 cp of raw at 20 degC, 5 bar(a) in J/(mol*K)
 viscosity of raw at 20 degC
 viscosity of CH4 at 20 degC
+second virial coefficient of raw at 20 degC
+second virial coefficient of CH4 at 20 degC
 water dew point of feed
 water dew point of raw at -10 degC, 25 mbar(g), dew point -20 degC
 water dew point of air at 20 degC, 1 bar(a), 60 %RH
@@ -349,6 +351,14 @@ def names_once(tap):
               [] if len(places) == 4 and places == sorted(places) else steps)
 
 
+def short_names(tap):
+    """Of two names of sources, one the beginning of the other, the one that is meant is explained."""
+    text = "second virial coefficient of CH4 at 20 degC\nworkings\n"
+    _, out, _ = run(text, "text")
+    explained = [line.strip().split(":")[0] for line in out.splitlines() if " W. M. Haynes" in line]
+    tap.check("the longer name of a source alone", [] if explained == ["CRC 2014 6"] else explained)
+
+
 def others(tap):
     """Statements that answer without being questions."""
     text = PREAMBLE + "let dose = 100 kg/h\nstream fed = feed + dose of C3H8\n"
@@ -436,6 +446,7 @@ def main():
     shares(tap)
     kept(tap)
     names_once(tap)
+    short_names(tap)
     others(tap)
     balances(tap)
     forms(tap)

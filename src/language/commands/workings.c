@@ -185,14 +185,29 @@ complete (struct session *s, struct arena *arena, const struct step *from)
 struct names { struct arena *arena; const struct table *table; bool *told;
                const struct workings_source *first, **last; };
 
-/* Does TEXT hold NAME as words of its own?  */
+/* Does TEXT begin with NAME as words of its own?  */
 static bool
-mentions_source (const char *text, const char *name)
+begins_with (const char *text, const char *name)
 {
-  const char *at = strstr (text, name);
   size_t n = strlen (name);
-  return at && (at == text || !isalnum ((unsigned char) at[-1]))
-         && !isalnum ((unsigned char) at[n]);
+  return strncmp (text, name, n) == 0 && !isalnum ((unsigned char) text[n]);
+}
+
+/* Does TEXT hold NAME as words of its own that are not the beginning of a longer name?  */
+static bool
+mentions_source (const struct table *table, const char *text, const char *name)
+{
+  for (const char *at = strstr (text, name); at; at = strstr (at + 1, name)) {
+    bool holds = (at == text || !isalnum ((unsigned char) at[-1])) && begins_with (at, name);
+    for (size_t i = 0; holds && i < table_rows (table); i++) {
+      const char *other = table_cell (table, i, 0);
+      holds = strlen (other) <= strlen (name) || !begins_with (at, other);
+    }
+    if (holds) {
+      return true;
+    }
+  }
+  return false;
 }
 
 static void
@@ -200,7 +215,7 @@ name_source (struct names *names, const char *text)
 {
   for (size_t i = 0; text && i < table_rows (names->table); i++) {
     const char *name = table_cell (names->table, i, 0);
-    if (!names->told[i] && mentions_source (text, name)) {
+    if (!names->told[i] && mentions_source (names->table, text, name)) {
       struct workings_source *source = ARENA_NEW (names->arena, struct workings_source);
       *source = (struct workings_source) { name, table_cell (names->table, i, 1), NULL };
       names->told[i] = true;

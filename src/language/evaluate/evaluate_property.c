@@ -372,6 +372,8 @@ dispatch (struct evaluation *ev, const struct property_question *q, const struct
     return property_dew_point (ev, q, out);
   case PROPERTY_VISCOSITY:
     return property_viscosity (ev, q, out);
+  case PROPERTY_SECOND_VIRIAL_COEFFICIENT:
+    return property_virial (ev, q, out);
   case PROPERTY_FLAMMABLE_LIMITS:
   case PROPERTY_LOWER_FLAMMABLE_LIMIT:
   case PROPERTY_UPPER_FLAMMABLE_LIMIT:

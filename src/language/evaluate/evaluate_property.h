@@ -22,10 +22,13 @@ bool property_answer (struct evaluation *, const struct property_question *, dou
 bool property_needs (struct evaluation *, const struct property_question *, bool T, bool p)
   MUST_CHECK;
 
-/* cp, cv, kappa, speed of sound; viscosity; flammable limits (evaluate_thermal.c).  */
+/* cp, cv, kappa, speed of sound; viscosity; second virial coefficient; flammable limits
+   (evaluate_thermal.c).  */
 bool property_caloric (struct evaluation *, const struct property_question *, struct value *)
   MUST_CHECK;
 bool property_viscosity (struct evaluation *, const struct property_question *, struct value *)
+  MUST_CHECK;
+bool property_virial (struct evaluation *, const struct property_question *, struct value *)
   MUST_CHECK;
 bool property_flammable (struct evaluation *, const struct property_question *, struct value *)
   MUST_CHECK;

@@ -11,6 +11,7 @@
 #include "language/evaluate/wording.h"
 #include "property/flammability.h"
 #include "property/heat_capacity.h"
+#include "property/virial.h"
 #include "property/viscosity.h"
 #include "support/arena.h"
 #include "units/constants.h"
@@ -186,6 +187,36 @@ property_viscosity (struct evaluation *ev, const struct property_question *q, st
     out->basis = arena_format (ev->arena, "%s, low pressure%s",
                                temperature_text (ev->arena, q->T, false),
                                v.mixture ? ", mixed by Wilke's rule" : "");
+  }
+  return true;
+}
+
+/* ---- Second virial coefficient ---- */
+
+bool
+property_virial (struct evaluation *ev, const struct property_question *q, struct value *out)
+{
+  struct second_virial B;
+  if (!property_needs (ev, q, true, false)
+      || !second_virial_of_gas (ev->session->properties, q->gas, q->T, &B, ev->workings,
+                                ev->fault)) {
+    fault_place (ev->fault, q->node->at);
+    return false;
+  }
+  if (!property_answer (ev, q, B.value, out)) {
+    return false;
+  }
+  if (B.outside) {
+    note (ev, MESSAGE_NOTE_BEYOND_RANGE, "second virial coefficient", B.outside->key, NULL);
+  }
+  if (ev->describe) {
+    const char *T = temperature_text (ev->arena, q->T, false);
+    const bool pairs = q->gas->count > 1;
+    out->basis = pairs || B.estimated
+                   ? arena_format (ev->arena, "%s, %s%s%s estimated by Tsonopoulos (1974)", T,
+                                   pairs ? "pairs" : "", pairs && B.estimated ? " and " : "",
+                                   B.estimated ? B.estimated->key : "")
+                   : arena_format (ev->arena, "%s, smoothed measurements", T);
   }
   return true;
 }
