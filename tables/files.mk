@@ -8,6 +8,7 @@ tables = \
   %D%/exposure.tsv \
   %D%/flammability.tsv \
   %D%/formation.tsv \
+  %D%/fuels.tsv \
   %D%/iso6976_1995.tsv \
   %D%/iso6976_2016.tsv \
   %D%/iso6976_constants.tsv \

@@ -136,3 +136,25 @@ composition_wetted (struct arena *arena, const struct composition *c, const stru
     gathering_add (&g, water, y);
   return from_amounts (arena, &g, parts_total (g.count, g.parts));
 }
+
+/* phi_i = x_i Z_i/sum x_k Z_k (ISO 14912:2003): the volumes of the unmixed parts at one T and p
+   are in the ratio of n_i Z_i.                                                                  */
+void
+composition_volume_fractions (const struct composition *c, const double pure_Z[], double phi[])
+{
+  struct sum volume = { 0, 0 };
+  for (size_t i = 0; i < c->count; i++)
+    sum_add (&volume, c->fraction[i] * pure_Z[i]);
+  double total = sum_total (&volume);
+  for (size_t i = 0; i < c->count; i++)
+    phi[i] = c->fraction[i] * pure_Z[i] / total;
+}
+
+double
+composition_mixing_factor (const struct composition *c, const double pure_Z[], double Z)
+{
+  struct sum volume = { 0, 0 };
+  for (size_t i = 0; i < c->count; i++)
+    sum_add (&volume, c->fraction[i] * pure_Z[i]);
+  return Z / sum_total (&volume);
+}

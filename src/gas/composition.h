@@ -43,4 +43,12 @@ const struct composition *composition_wetted (struct arena *, const struct compo
                                               const struct species *water, double y,
                                               struct fault *) MUST_CHECK;
 
+/* A volume fraction at one T and P of the unmixed parts (ISO 14912): phi_i = x_i Z_i/sum x_k Z_k,
+   for given Z of the pure parts.  The way back is composition_make of phi_i/Z_i.               */
+void composition_volume_fractions (const struct composition *, const double pure_Z[],
+                                   double phi[]);
+/* The mixing factor f = V/sum V_k = Z/sum x_k Z_k of a mixture with compression factor Z.  A volume
+   concentration (ISO 14912) is per volume of the mixture: sigma_i = x_i Z_i/Z = phi_i/f.        */
+double composition_mixing_factor (const struct composition *, const double pure_Z[], double Z);
+
 #endif

@@ -66,10 +66,13 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/commands/workings.c \
   %D%/convert/convert.c \
   %D%/convert/convert.h \
+  %D%/convert/convert_emission.c \
   %D%/convert/convert_heat.c \
   %D%/convert/convert_part.c \
+  %D%/convert/convert_part.h \
   %D%/convert/convert_quantity.c \
   %D%/convert/convert_stream.c \
+  %D%/convert/convert_trace.c \
   %D%/definition.c \
   %D%/evaluate/ask.c \
   %D%/evaluate/assume.c \
@@ -88,6 +91,8 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/evaluate/evaluation.h \
   %D%/evaluate/flow.c \
   %D%/evaluate/flow.h \
+  %D%/evaluate/fuel.c \
+  %D%/evaluate/fuel.h \
   %D%/evaluate/heat.c \
   %D%/evaluate/limits.c \
   %D%/evaluate/montecarlo.c \
@@ -101,6 +106,8 @@ noinst_LIBRARIES += %D%/liblanguage.a
   %D%/evaluate/state.c \
   %D%/evaluate/uncertainty.c \
   %D%/evaluate/uncertainty.h \
+  %D%/evaluate/unmixed.c \
+  %D%/evaluate/unmixed.h \
   %D%/evaluate/value.c \
   %D%/evaluate/value.h \
   %D%/evaluate/volume.c \

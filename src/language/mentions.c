@@ -35,6 +35,8 @@ tree_visit (const struct statement *s, void (*visit) (const struct node *, void 
   }
   for (const struct target *t = s->targets; t; t = t->next) {
     visit_node (t->counted_as, visit, with);
+    visit_node (t->burning, visit, with);
+    visit_node (t->factor ? t->factor->quantity : NULL, visit, with);
     visit_node (t->state, visit, with);
     visit_node (t->with, visit, with);
   }

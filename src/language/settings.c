@@ -32,6 +32,7 @@ settings_init (struct settings *s)
     .site_altitude = UNSTATED,
     .model = GAS_MODEL_AUTO,
     .oxygen_in_air = 0.2095,
+    .water_in_air = 0.027,
     .total_tolerance = 0.005,
     .below = BELOW_HALF,
     .combustion = 288.15,

@@ -54,6 +54,7 @@ struct settings {
   enum gas_model model;
   bool real_volumes;
   double oxygen_in_air;                    /* mol/mol */
+  double water_in_air;                     /* mol/mol, of emissions by a wet F factor */
   double total_tolerance;                  /* relative */
   enum below_detection below;
   double combustion;                       /* K */

@@ -102,13 +102,19 @@ struct node {
   bool rest, below;               /* of NODE_PART */
 };
 
-/* `in` UNIT words [counted as NAME] [at ... | , with ...] [as NAME].  */
+struct stated_property;
+
+/* `in` UNIT words [counted as NAME] [burning FUEL [by NAME] | with F FACTOR FIGURE]
+   [at ... | , with ...] [as NAME].  */
 struct target {
   const struct unit *unit;
   const char *unit_text;
   struct place at;
   unsigned words;
   const struct node *counted_as;  /* NODE_NAME */
+  const struct node *burning;     /* NODE_NAME of the fuel an emission per heat is of, or null */
+  const struct node *tracer;      /* NODE_NAME of what tells of the excess air; or null */
+  const struct stated_property *factor;          /* an F factor in place of a fuel, or null */
   const struct node *state;       /* NODE_STATE behind `at`, or null */
   const struct node *with;        /* NODE_STATE of the items behind the comma, or null */
   const char *as;

@@ -25,7 +25,7 @@ read_rows (struct figures *figures, const struct table *table, const int at[], s
       if (!table_number (table, i, at[k], &value[k], fault))
         return false;
     *row = (struct figures_row) {
-      value, table_cell (table, i, note), table_cell (table, i, source)
+      key, value, table_cell (table, i, note), table_cell (table, i, source)
     };
     map_put (figures->rows, key, strlen (key), row);
   }
@@ -64,6 +64,12 @@ figures_of (const struct figures *figures, const struct species *species)
   if (species->origin == SPECIES_STATED)
     return NULL;
   return map_find (figures->rows, species->key, strlen (species->key));
+}
+
+const struct figures_row *
+figures_named (const struct figures *figures, const char *key)
+{
+  return map_find (figures->rows, key, strlen (key));
 }
 
 bool

@@ -12,6 +12,7 @@
 struct composition; struct fault; struct figures; struct species;
 
 struct figures_row {
+  const char *key;
   const double *value;                   /* by column, NAN where the cell is empty */
   const char *note, *source;             /* never null */
 };
@@ -26,6 +27,9 @@ void figures_destroy (struct figures *);                 /* null is allowed */
 /* Null where the table has no row for it.  A gas known by its molar mass alone has none,
    whatever it is called.                                                                        */
 const struct figures_row *figures_of (const struct figures *, const struct species *);
+
+/* The row of KEY, whatever that names; null: none.  */
+const struct figures_row *figures_named (const struct figures *, const char *key);
 
 /* Has every part of a gas a row?  If not: kind model-lacks, naming the largest part without.  */
 bool figures_cover (const struct figures *, const struct composition *,

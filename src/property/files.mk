@@ -8,6 +8,8 @@ noinst_LIBRARIES += %D%/libproperty.a
   %D%/calorific_private.h \
   %D%/calorific_record.c \
   %D%/calorific_tables.c \
+  %D%/emission.c \
+  %D%/emission.h \
   %D%/enhancement.c \
   %D%/enhancement.h \
   %D%/figures.c \

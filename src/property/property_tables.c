@@ -10,7 +10,8 @@ struct property_tables {
   struct figures *read[PROPERTY_TABLES]; /* null: not yet */
 };
 
-static const char *const names[PROPERTY_TABLES] = { "cp_ideal", "viscosity", "virial" };
+static const char *const names[PROPERTY_TABLES] = { "cp_ideal", "viscosity", "virial",
+                                                     "fuels" };
 
 struct property_tables *
 property_tables_create (const char *directory)

@@ -15,7 +15,7 @@ struct property_tables *property_tables_create (const char *directory) MUST_CHEC
 void property_tables_destroy (struct property_tables *);             /* null is allowed */
 
 enum property_table { PROPERTY_TABLE_CP_IDEAL, PROPERTY_TABLE_VISCOSITY, PROPERTY_TABLE_VIRIAL,
-                      PROPERTY_TABLES };
+                      PROPERTY_TABLE_FUELS, PROPERTY_TABLES };
 
 /* The table with these N columns (the same at every call), read now if it was not yet.  For the
    modules of this layer.  Borrowed.  Null with FAULT if a user's file of that name cannot be

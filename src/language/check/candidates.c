@@ -241,10 +241,13 @@ static bool
 counts (const struct check *check, const char *as)
 {
   const struct value *v = &check->value;
+  const char *now = v->species.count == 0 ? "" : v->species.counted_as ? v->species.counted_as
+                                                                        : v->species.at[0]->key;
   char element[] = { as[0], '\0' };
-  return (v->kind == VALUE_PART || v->kind == VALUE_TRACE) && v->species.count == 1
+  return (v->kind == VALUE_PART || v->kind == VALUE_TRACE)
+         && (v->species.count == 1 || v->species.counted_as)
          && species_atoms (v->species.at[0], element) > 0
-         && (check->target.counted_as || strcmp (v->species.at[0]->key, as) != 0);
+         && (check->target.counted_as || strcmp (now, as) != 0);
 }
 
 /* Can the rule move anything on these sides?  */

@@ -57,6 +57,21 @@ nearest_topic (const char *word)
   return best;
 }
 
+/* What a topic is looked for by, too.  */
+static const char *
+topic_of (const char *words)
+{
+  static const struct { const char *words, *topic; } also[] = {
+    { "F factor", "emissions" }, { "F factors", "emissions" }, { "NOx", "emissions" },
+    { "burning", "emissions" }, { "emission", "emissions" }
+  };
+  for (size_t i = 0; i < sizeof also / sizeof also[0]; i++)
+    if (strcmp (also[i].words, words) == 0) {
+      return also[i].topic;
+    }
+  return words;
+}
+
 static bool
 no_topic (const struct statement *s, struct result *result, struct fault *fault)
 {
@@ -79,8 +94,9 @@ command_help (struct session *session, const struct statement *s, struct result 
     overview (result);
     return true;
   }
+  const char *topic = topic_of (s->help_words);
   for (size_t i = 0; i < TOPIC_COUNT; i++)
-    if (strcmp (topics[i].name, s->help_words) == 0) {
+    if (strcmp (topics[i].name, topic) == 0) {
       page = page ? page : result_help (result, topics[i].name);
       help_add (result, page, topics[i].say, topics[i].get, topics[i].example);
     }

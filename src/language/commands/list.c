@@ -181,6 +181,8 @@ setting_value (struct arena *arena, const struct settings *s, enum setting setti
     return s->real_volumes ? "real" : "ideal";
   case SETTING_OXYGEN_IN_AIR:
     return share_text (arena, s->oxygen_in_air);
+  case SETTING_WATER_IN_AIR:
+    return share_text (arena, s->water_in_air);
   case SETTING_TOTAL_TOLERANCE:
     return arena_format (arena, "%s %%", figure_text (arena, s->total_tolerance * 100));
   case SETTING_BELOW_DETECTION:

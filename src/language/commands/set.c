@@ -32,6 +32,7 @@ touch_of (enum setting setting)
   case SETTING_SITE_ALTITUDE: return TOUCH_SITE;
   case SETTING_REFERENCE_VOLUMES: return TOUCH_VOLUMES;
   case SETTING_OXYGEN_IN_AIR: return TOUCH_OXYGEN;
+  case SETTING_WATER_IN_AIR: return TOUCH_OXYGEN;
   case SETTING_TOTAL_TOLERANCE: return TOUCH_TOLERANCE;
   case SETTING_BELOW_DETECTION: return TOUCH_BELOW;
   case SETTING_COMBUSTION:
@@ -111,6 +112,7 @@ set_words (const struct statement *s, struct settings *new, struct fault *fault)
   case SETTING_SITE_PRESSURE:
   case SETTING_SITE_ALTITUDE:
   case SETTING_OXYGEN_IN_AIR:
+  case SETTING_WATER_IN_AIR:
   case SETTING_TOTAL_TOLERANCE:
   case SETTING_COMBUSTION:
   case SETTING_LOWER_FLAMMABLE_LIMIT:
@@ -184,6 +186,10 @@ set_figure (struct session *session, const struct statement *s, struct settings 
     new->oxygen_in_air = v.si;
     return (v.si > 0 && v.si < 1)
            || out_of_range (s, fault, "oxygen in air lies between 0 and 100 mol%");
+  case SETTING_WATER_IN_AIR:
+    new->water_in_air = v.si;
+    return (v.si >= 0 && v.si <= 0.2)
+           || out_of_range (s, fault, "water in air lies between 0 and 20 mol%");
   case SETTING_TOTAL_TOLERANCE:
     new->total_tolerance = v.si;
     return (v.si >= 0 && v.si <= 0.1)

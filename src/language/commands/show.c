@@ -111,7 +111,9 @@ command_show (struct session *session, const struct statement *s, struct result 
     return card_of_unit (session, s->unit, result, fault);
   }
   if (match == SPECIES_AMBIGUOUS) {
-    return fault_set_at (fault, MESSAGE_NAME_OPEN, s->name_at, s->name, candidates);
+    fault_set_at (fault, MESSAGE_NAME_OPEN, s->name_at, s->name, candidates);
+    fault->fact[2] = sum_way_on (fault->arena, s->name);
+    return false;
   }
   switch (reference_find (session->references, s->name, n, &reference, &candidates)) {
   case REFERENCE_ONE:

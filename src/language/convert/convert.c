@@ -130,6 +130,7 @@ settle_target (struct conversion *c, const struct target *t)
   c->words = t->words;
   c->at = t->at;
   c->counted_as = t->counted_as;
+  c->target = t;
   c->label = t->as;
   if (t->state) {
     c->has_state = true;
@@ -184,6 +185,14 @@ target_fits (struct conversion *c)
   if (c->counted_as && v->kind != VALUE_PART && v->kind != VALUE_TRACE) {
     return fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->counted_as->at,
                          "only a component is counted as another", NULL);
+  }
+  const struct node *burning = c->target && c->target->factor ? c->target->factor->quantity
+                               : c->target ? c->target->burning : NULL;
+  if (burning && !(unit_is_emission (c->unit)
+                   && (v->kind == VALUE_PART || v->kind == VALUE_TRACE))) {
+    return fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, burning->at,
+                         "only a component told as mass per heat is that of something burnt: "
+                         "CO of flue in mg/MJ burning raw", NULL);
   }
   bool figure = v->kind == VALUE_QUANTITY && v->measure.ratio == RATIO_NONE && !v->gas
                 && (dimension_equal (v->measure.dimension, DIMENSION_TEMPERATURE)

@@ -15,6 +15,7 @@ struct conversion {
   struct state state;                       /* of the target; NANs where it says nothing */
   bool has_state;
   const struct node *counted_as;
+  const struct target *target;              /* as said; null: the units typed */
   const char *label, *what;
   struct place at, subject_at;              /* of the target (or the subject); of the subject */
   struct figures *figures;
@@ -33,12 +34,18 @@ bool convert_part (struct conversion *) MUST_CHECK;
 bool convert_trace (struct conversion *) MUST_CHECK;
 bool convert_specific (struct conversion *) MUST_CHECK;
 bool convert_calorific (struct conversion *) MUST_CHECK;
+bool convert_emission (struct conversion *) MUST_CHECK;
+/* An F factor, which holds at the T and p of the value, at those of the target.  */
+bool convert_f_factor (struct conversion *) MUST_CHECK;
 bool convert_limits (struct conversion *) MUST_CHECK;
 bool convert_energy (struct conversion *, const struct composition *, double moles) MUST_CHECK;
 bool convert_energy_ratio (struct conversion *) MUST_CHECK;
 
 /* Is the unit a share or a concentration?  */
 bool unit_is_concentration (const struct unit *);
+/* Is it a mass per heat?  A volume per heat?  */
+bool unit_is_emission (const struct unit *);
+bool unit_is_f_factor (const struct unit *);
 /* Moles of what is counted for each mole of SPECIES, and its molar mass: `counted as S`.  */
 bool counted_as (struct conversion *, const struct species *, double *per_mole,
                  double *molar_mass) MUST_CHECK;

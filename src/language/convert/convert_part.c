@@ -1,5 +1,5 @@
 #include "config.h"
-#include "language/convert/convert.h"
+#include "language/convert/convert_part.h"
 
 #include <math.h>
 #include <string.h>
@@ -7,15 +7,9 @@
 #include "gas/species.h"
 #include "language/evaluate/flow.h"
 #include "language/evaluate/record.h"
+#include "language/evaluate/unmixed.h"
 #include "language/evaluate/wording.h"
 #include "support/arena.h"
-
-/* The gas a component is in, as the target wants it counted.  */
-struct host {
-  const struct composition *gas;           /* dry if the target says so */
-  double share;                            /* mol of the component per mol of that gas */
-  struct stream state;                     /* T, p, Z of its own */
-};
 
 /* The share of a component in the gas it is in, before the target has its say.  */
 static void
@@ -31,7 +25,7 @@ record_share (const struct conversion *c, double share)
                         SYMBOL ("n", v->stream.moles, moles_unit (v->stream.flow))));
 }
 
-static bool
+bool
 host_of (struct conversion *c, struct host *host)
 {
   const struct value *v = c->value;
@@ -82,8 +76,7 @@ host_of (struct conversion *c, struct host *host)
   return host->gas != NULL;
 }
 
-/* Oxygen of the gas, dry.  */
-static double
+double
 dry_oxygen (struct conversion *c, const struct composition *gas)
 {
   double y = composition_fraction (gas, c->ev->session->water);
@@ -95,9 +88,8 @@ dry_oxygen (struct conversion *c, const struct composition *gas)
   return y < 1 ? composition_fraction (gas, c->ev->session->oxygen) / (1 - y) : 0;
 }
 
-/* The oxygen a figure counts at: that of the target, else that of a trace as it was stated.  */
-static const char *
-with_oxygen (struct conversion *c, const char *basis)
+const char *
+conversion_oxygen (struct conversion *c, const char *basis)
 {
   double at = c->state.oxygen;
   at = isnan (at) && c->value->kind == VALUE_TRACE ? c->value->oxygen : at;
@@ -130,8 +122,7 @@ counted_group (struct conversion *c, double *mass_per_mole, double *moles_per_mo
   return true;
 }
 
-/* Mass per mole of what the component is counted as, all species of a peak together.  */
-static bool
+bool
 counted_mass (struct conversion *c, double *mass_per_mole, double *moles_per_mole)
 {
   const struct value *v = c->value;
@@ -162,34 +153,18 @@ real_volume_share (struct conversion *c, const struct host *host, double *phi,
 {
   const struct value *v = c->value;
   struct state at = c->state;
-  double sum = 0;
-  *phi = 0;
   if (!c->has_state || isnan (at.T) || isnan (at.p)) {
     struct conditions metering = c->ev->settings->family[FAMILY_STANDARD].at;
     at.T = metering.T;
     at.p = metering.p;
     assume_family (c->ev, FAMILY_STANDARD);
   }
-  for (size_t i = 0; i < host->gas->count; i++) {
-    const struct species *species = host->gas->species[i];
-    struct volume_question q = { composition_pure (c->ev->arena, species), at.T, at.p, UNSTATED,
-                                 false };
-    double Vm, Z;
-    const char *model;
-    if (!actual_molar_volume (c->ev, &q, &Vm, &Z, &model)) {
-      fault_place (c->ev->fault, c->at);
-      return false;
-    }
-    sum += host->gas->fraction[i] * Z;
-    for (size_t k = 0; k < v->species.count; k++) {
-      *phi += v->species.at[k] == species ? host->gas->fraction[i] * Z : 0;
-    }
+  struct unmixed u;
+  if (!unmixed_volumes (c->ev, host->gas, at.T, at.p, &u)) {
+    fault_place (c->ev->fault, c->at);
+    return false;
   }
-  const double own = *phi;
-  *phi /= sum;
-  RECORD (c->ev, .name = "share of the unmixed volumes", .formula = "phi = s_c/s", .value = *phi,
-          .unit = "m3/m3", .source = "ISO 14912:2003, phi_i = x_i Z_i/sum x_k Z_k",
-          STEP_SYMBOLS (SYMBOL ("s_c", own, "1"), SYMBOL ("s", sum, "1")));
+  *phi = unmixed_share (c->ev, host->gas, &u, &v->species);
   *basis = c->ev->describe
              ? arena_format (c->ev->arena, "of the parts unmixed at %s, %s, real",
                              temperature_text (c->ev->arena, at.T, false),
@@ -216,8 +191,7 @@ note_none_stated (struct conversion *c)
   }
 }
 
-/* The share at the reference oxygen.  */
-static void
+void
 record_corrected (const struct conversion *c, double share, double factor)
 {
   if (!isnan (c->state.oxygen)) {
@@ -227,8 +201,7 @@ record_corrected (const struct conversion *c, double share, double factor)
   }
 }
 
-/* By mass: M_c is the mass counted for a mole of the component.  */
-static void
+void
 record_mass_share (const struct conversion *c, const struct composition *gas, double x,
                    double per_mass, double w)
 {
@@ -243,8 +216,7 @@ record_mass_share (const struct conversion *c, const struct composition *gas, do
                         SYMBOL ("M", gas->molar_mass, "kg/mol")));
 }
 
-/* Counted as another: PER of it for each mole.  */
-static void
+void
 record_counted (const struct conversion *c, double x, double per, const char *unit, double si)
 {
   if (c->counted_as) {
@@ -254,7 +226,7 @@ record_counted (const struct conversion *c, double x, double per, const char *un
   }
 }
 
-static void
+void
 record_per_volume (const struct conversion *c, double x, double per, double Vm, double si)
 {
   const bool by_mass = dimension_equal (c->unit->dimension, DIMENSION_DENSITY);
@@ -282,7 +254,7 @@ concentration (struct conversion *c)
   }
   double x = host.share * factor;
   struct standing standing = { c->what, c->ev->describe ? moisture_word (c->ev, host.gas) : NULL,
-                               with_oxygen (c, NULL) };
+                               conversion_oxygen (c, NULL) };
   const struct unit *u = c->unit;
   record_corrected (c, host.share, factor);
   if (u->ratio == RATIO_MASS) {
@@ -295,7 +267,7 @@ concentration (struct conversion *c)
     if (!real_volume_share (c, &host, &phi, &standing.basis)) {
       return false;
     }
-    standing.basis = with_oxygen (c, standing.basis);
+    standing.basis = conversion_oxygen (c, standing.basis);
     return conversion_add (c, phi * factor, &standing);
   }
   if (u->ratio == RATIO_ENERGY) {
@@ -313,7 +285,7 @@ concentration (struct conversion *c)
   if (!conversion_volume (c, host.gas, &host.state, &volume)) {
     return false;
   }
-  standing.basis = with_oxygen (c, volume.basis);
+  standing.basis = conversion_oxygen (c, volume.basis);
   bool by_mass = dimension_equal (u->dimension, DIMENSION_DENSITY);
   double si = x * (by_mass ? per_mass : per_moles) / volume.Vm;
   record_per_volume (c, x, by_mass ? per_mass : per_moles, volume.Vm, si);
@@ -382,14 +354,36 @@ partial_flow (struct conversion *c, enum flow_basis basis)
   return conversion_add (c, part_volume, &standing);
 }
 
+/* NOx by mass is NO and NO2 as NO2, unless the target counts it as something else.  */
+static void
+count_sum (struct conversion *c)
+{
+  const char *as = c->value->species.counted_as;
+  struct dimension d = c->unit->dimension;
+  bool by_mass = c->unit->ratio == RATIO_MASS || dimension_equal (d, DIMENSION_DENSITY)
+                 || dimension_equal (d, DIMENSION_MASS) || dimension_equal (d, DIMENSION_MASS_FLOW)
+                 || unit_is_emission (c->unit);
+  if (!as || c->counted_as || !by_mass) {
+    return;
+  }
+  struct node *name = ARENA_NEW (c->ev->arena, struct node);
+  *name = (struct node) { .kind = NODE_NAME, .text = as, .at = c->at };
+  c->counted_as = name;
+  assume_counted_as (c->ev, c->value->part, as);
+}
+
 bool
 convert_part (struct conversion *c)
 {
   const struct value *v = c->value;
   struct measure m = measure_of_unit (c->unit);
   bool flow;
+  count_sum (c);
   if (unit_is_concentration (c->unit)) {
     return concentration (c);
+  }
+  if (unit_is_emission (c->unit)) {
+    return convert_emission (c);
   }
   enum flow_basis basis = flow_basis_of (&m, &flow);
   if (basis == FLOW_NONE) {
@@ -413,162 +407,4 @@ convert_part (struct conversion *c)
     return convert_energy (c, composition_pure (c->ev->arena, v->species.at[0]), v->moles);
   }
   return partial_flow (c, basis);
-}
-
-/* ---- Traces ---- */
-
-static bool
-trace_needs_gas (struct conversion *c)
-{
-  fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->at,
-                "a share by mass needs the gas the trace is in", NULL);
-  fault_hint (c->ev->fault, "... of %s within GAS in %s", c->value->part, c->unit_text);
-  return false;
-}
-
-static bool
-trace_oxygen (struct conversion *c, double *factor)
-{
-  const struct value *v = c->value;
-  *factor = 1;
-  if (isnan (c->state.oxygen)) {
-    return true;
-  }
-  if (isnan (v->oxygen)) {
-    fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->at,
-                  "the oxygen the figure was measured at is not said", NULL);
-    fault_hint (c->ev->fault, "... of %s at 5 %%O2 in ...", v->part);
-    return false;
-  }
-  return oxygen_factor (c, v->oxygen, c->what, factor);
-}
-
-/* The factor from the oxygen a trace was stated at to that of the stream it is within.  */
-static bool
-trace_oxygen_of_stream (struct conversion *c, double *factor)
-{
-  const struct value *v = c->value;
-  const struct composition *gas = v->stream.gas;
-  *factor = 1;
-  if (isnan (v->oxygen)) {
-    return true;
-  }
-  double y = composition_fraction (gas, c->ev->session->water);
-  double oxygen = composition_fraction (gas, c->ev->session->oxygen) / (1 - y);
-  if (!(oxygen > 0)) {
-    return fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->subject_at,
-                         "the figure is at a reference oxygen, and the stream states none", NULL);
-  }
-  c->state.oxygen = oxygen;
-  bool done = oxygen_factor (c, v->oxygen, c->what, factor);
-  c->state.oxygen = UNSTATED;
-  return done;
-}
-
-/* The flow of a trace that is within a stream.  A figure of a wet gas says which gas it is of.  */
-static bool
-trace_flow (struct conversion *c)
-{
-  const struct value *v = c->value;
-  struct value part = *v;
-  if (!v->of_stream) {
-    return conversion_mismatch (c, "a concentration is told as a share or per volume");
-  }
-  if (composition_fraction (v->stream.gas, c->ev->session->water) > 0
-      && !(v->words & (WORD_DRY | WORD_WET))) {
-    fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->subject_at,
-                  "the stream is wet: is the figure one of the dry gas or of the wet?", NULL);
-    fault_hint (c->ev->fault, "100 ppm dry of %s within ..., or 100 ppm wet of %s within ...",
-                v->part, v->part);
-    return false;
-  }
-  double factor;
-  if (!isnan (c->state.oxygen)) {
-    return conversion_mismatch (c, "a reference oxygen belongs to a concentration");
-  }
-  if (!trace_oxygen_of_stream (c, &factor)) {
-    return false;
-  }
-  part.kind = VALUE_PART;
-  part.flow = v->stream.flow;
-  part.moles = factor * v->si * v->stream.moles;
-  part.mass = part.moles * v->species.at[0]->molar_mass;
-  c->value = &part;
-  bool done = convert_part (c);
-  c->value = v;
-  return done;
-}
-
-/* The gas a trace is within, dry if the target says so, and the trace's share of it.  */
-static const struct composition *
-trace_host (struct conversion *c, double *x, struct standing *standing)
-{
-  const struct species *water = c->ev->session->water;
-  const struct composition *host = gas_composition (c->ev, c->value->gas, c->subject_at);
-  double y = host ? composition_fraction (host, water) : 0;
-  if (y > 0 && y < 1 && (c->words & WORD_DRY)) {
-    *x /= 1 - y;
-    host = composition_wetted (c->ev->arena, host, water, 0, c->ev->fault);
-  }
-  standing->moisture = host && y > 0 ? moisture_word (c->ev, host) : NULL;
-  return host;
-}
-
-bool
-convert_trace (struct conversion *c)
-{
-  const struct value *v = c->value;
-  const struct unit *u = c->unit;
-  struct standing standing = { c->what, NULL, with_oxygen (c, NULL) };
-  double per, M, factor;
-  if (!unit_is_concentration (u)) {
-    return trace_flow (c);
-  }
-  if (!counted_as (c, v->species.at[0], &per, &M) || !trace_oxygen (c, &factor)) {
-    return false;
-  }
-  double x = v->si * factor;
-  record_corrected (c, v->si, factor);
-  if (v->measure.ratio == RATIO_MASS) {
-    double w = x * per * M / v->species.at[0]->molar_mass;
-    if (c->counted_as) {
-      RECORD (c->ev, .name = "counted as", .of = c->counted_as->text, .formula = "w = w_0 k M/M_c",
-              .value = w, .unit = "kg/kg", .source = STEP_DEFINITION,
-              STEP_SYMBOLS (SYMBOL ("w_0", x, "kg/kg"), SYMBOL ("k", per, "mol/mol"),
-                            CONSTANT ("M", M, "kg/mol", STEP_WEIGHTS),
-                            CONSTANT ("M_c", v->species.at[0]->molar_mass, "kg/mol",
-                                      STEP_WEIGHTS)));
-    }
-    return u->ratio == RATIO_MASS ? conversion_add (c, w, &standing) : trace_needs_gas (c);
-  }
-  const struct composition *host = NULL;
-  if (v->gas && !(host = trace_host (c, &x, &standing))) {
-    return false;
-  }
-  if (u->ratio == RATIO_MASS && !host) {
-    return trace_needs_gas (c);
-  }
-  if (u->ratio == RATIO_MASS) {
-    double w = x * per * M / host->molar_mass;
-    record_mass_share (c, host, x, per * M, w);
-    return conversion_add (c, w, &standing);
-  }
-  if (u->ratio == RATIO_ENERGY) {
-    return conversion_mismatch (c, "a concentration is told as a share or per volume");
-  }
-  if (u->ratio != RATIO_NONE) {
-    standing.basis = with_oxygen (c, "by amount: the same at any temperature and pressure");
-    record_counted (c, x, per, "1", x * per);
-    return conversion_add (c, x * per, &standing);
-  }
-  struct stream own = { .T = v->T, .p = v->p, .Z = UNSTATED };
-  struct counted_volume volume;
-  if (!conversion_volume (c, host, &own, &volume)) {
-    return false;
-  }
-  standing.basis = with_oxygen (c, volume.basis);
-  bool by_mass = dimension_equal (u->dimension, DIMENSION_DENSITY);
-  double si = x * per * (by_mass ? M : 1) / volume.Vm;
-  record_per_volume (c, x, by_mass ? per * M : per, volume.Vm, si);
-  return conversion_add (c, si, &standing);
 }

@@ -299,6 +299,10 @@ convert_quantity (struct conversion *c)
     }
   }
   struct dimension d = c->unit->dimension;
+  if (unit_is_f_factor (c->unit) && v->basis && !isnan (v->T) && !v->gas
+      && dimension_equal (m->dimension, d)) {
+    return convert_f_factor (c);
+  }
   bool same = dimension_equal (m->dimension, d);
   if (same && dimension_equal (d, DIMENSION_PRESSURE) && m->ratio == RATIO_NONE) {
     return convert_pressure (c);

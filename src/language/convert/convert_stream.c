@@ -71,7 +71,7 @@ each_part (struct conversion *c, struct value *part, const struct composition *g
     if ((c->words & WORD_DRY) && species == c->ev->session->water) {
       continue;
     }
-    part->species = (struct species_set) { { species }, 1 };
+    part->species = (struct species_set) { { species }, 1, NULL };
     part->part = species->key;
     part->moles = per * gas->fraction[i];
     part->mass = part->moles * species->molar_mass;

@@ -210,6 +210,7 @@ known_gas (struct evaluation *ev, const struct node *node, const struct gas_valu
     return *gas != NULL;
   case SPECIES_AMBIGUOUS:
     fault_set_at (ev->fault, MESSAGE_NAME_OPEN, node->at, node->text, candidates);
+    ev->fault->fact[2] = sum_way_on (ev->fault->arena, node->text);
     return false;
   case SPECIES_NONE:
     break;

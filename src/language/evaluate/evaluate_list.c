@@ -3,6 +3,7 @@
 
 #include <math.h>
 #include <string.h>
+#include <strings.h>
 #include "gas/air.h"
 #include "gas/analysis.h"
 #include "gas/composition.h"
@@ -62,7 +63,10 @@ component_named (struct evaluation *ev, const struct node *name, struct componen
   case SPECIES_AMBIGUOUS:
     if (!strchr (name->text, '+') || !(out->gas = peak (ev, name->text))) {
       fault_set_at (ev->fault, MESSAGE_NAME_OPEN, name->at, name->text, candidates);
-      if (strchr (name->text, '+')) {
+      const char *sum = sum_way_on (ev->fault->arena, name->text);
+      if (sum) {
+        ev->fault->fact[2] = sum;
+      } else if (strchr (name->text, '+')) {
         fault_hint (ev->fault, "for all of them define it first, as a list or with what is known: "
                     "gas %s with molar mass ...", name->text);
       }
@@ -78,6 +82,53 @@ component_named (struct evaluation *ev, const struct node *name, struct componen
                          arena_format (ev->arena, "'%s' is no gas", name->text), NULL);
   }
   return out->gas || name_unknown (ev, name);
+}
+
+/* Sums that emission practice has a word for, and what they count as by mass: of nitrogen oxides
+   Directive 2010/75/EU, article 3, "expressed as nitrogen dioxide (NO2)"; of sulfur oxides common
+   practice, no source.                                                                          */
+static const struct { const char *name, *parts[2], *counted_as; } sums[] = {
+  { "nox", { "NO", "NO2" }, "NO2" }, { "sox", { "SO2", "SO3" }, "SO2" }
+};
+enum { SUMS = sizeof sums / sizeof sums[0] };
+
+static size_t
+sum_at (const char *name)
+{
+  for (size_t i = 0; i < SUMS; i++)
+    if (strcasecmp (name, sums[i].name) == 0) {
+      return i;
+    }
+  return SUMS;
+}
+
+const char *
+sum_way_on (struct arena *arena, const char *name)
+{
+  size_t i = sum_at (name);
+  return i == SUMS ? NULL
+         : arena_format (arena, "state both; or how they share, first: gas %s = %s 95, %s 5 mol%%. "
+                         "%s of GAS is both together, by mass as %s", name, sums[i].parts[0],
+                         sums[i].parts[1], name, sums[i].counted_as);
+}
+
+/* NOx: NO and NO2, whatever the user's gas of that name says of their shares.  */
+static bool
+sum_named (struct evaluation *ev, const char *name, struct species_set *set)
+{
+  size_t i = sum_at (name);
+  const char *candidates;
+  if (i == SUMS) {
+    return false;
+  }
+  for (size_t k = 0; k < 2; k++)
+    if (species_find (ev->session->vocabulary.species, sums[i].parts[k],
+                      strlen (sums[i].parts[k]), &set->at[k], &candidates) != SPECIES_KEY) {
+      return false;
+    }
+  set->count = 2;
+  set->counted_as = sums[i].counted_as;
+  return true;
 }
 
 /* Components that are told together, NO+NO2: each a component, none twice.  */
@@ -117,6 +168,7 @@ species_named (struct evaluation *ev, const struct node *name, struct species_se
   size_t n = strlen (name->text);
   enum species_match match = species_find (ev->session->vocabulary.species, name->text, n,
                                            &species, &candidates);
+  set->counted_as = NULL;
   if (match == SPECIES_KEY || match == SPECIES_SYNONYM) {
     set->at[0] = species;
     set->count = 1;
@@ -125,7 +177,7 @@ species_named (struct evaluation *ev, const struct node *name, struct species_se
   if (air_is_name (name->text, n)) {
     return fault_set_at (ev->fault, MESSAGE_KIND_WRONG, name->at, "'air' is no component", NULL);
   }
-  if (group_named (ev, name->text, set)) {
+  if (sum_named (ev, name->text, set) || group_named (ev, name->text, set)) {
     return true;
   }
   if (!component_named (ev, name, &c)) {

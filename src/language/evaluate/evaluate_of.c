@@ -47,7 +47,8 @@ select_by_name (struct evaluation *ev, const struct node *node)
     fault_hint (ev->fault, "the component: %s of ...; or rename the quantity", species->key);
     return SELECT_FAILED;
   }
-  if (component || (d->kind == NAME_GAS && strchr (node->text, '+'))) {
+  if (component || (d->kind == NAME_GAS && (strchr (node->text, '+')
+                                            || sum_way_on (ev->arena, node->text)))) {
     return SELECT_PART;
   }
   fault_set_at (ev->fault, MESSAGE_KIND_WRONG, node->at,
@@ -289,6 +290,21 @@ trace_wets (struct evaluation *ev, const struct node *figure, const struct gas_v
 
 static const struct dimension CONCENTRATION_BY_MOLES = { -3, 0, 0, 0, 1 };
 
+/* A trace of a sum (NOx) is one of what the sum counts as.  */
+static bool
+trace_counts (struct evaluation *ev, struct value *trace)
+{
+  const char *as = trace->species.counted_as, *candidates;
+  if (!as) {
+    return true;
+  }
+  enum species_match match = species_find (ev->session->vocabulary.species, as, strlen (as),
+                                           &trace->species.at[0], &candidates);
+  trace->species.count = 1;
+  assume_counted_as (ev, trace->part, as);
+  return match == SPECIES_KEY;
+}
+
 /* 25 ppm of H2S, 200 mg/Nm3 of NO at 3 %O2, 50 ppm of H2S within raw.  */
 static bool
 trace_of (struct evaluation *ev, const struct node *node, const struct value *quantity,
@@ -304,7 +320,7 @@ trace_of (struct evaluation *ev, const struct node *node, const struct value *qu
                          "a concentration is one of a single component", NULL);
   }
   trace.part = node->b->text;
-  if (!species_named (ev, node->b, &trace.species)) {
+  if (!species_named (ev, node->b, &trace.species) || !trace_counts (ev, &trace)) {
     return false;
   }
   if (state) {
@@ -415,7 +431,10 @@ quantity_of (struct evaluation *ev, const struct node *node, const struct state 
     return fault_set_at (ev->fault, MESSAGE_UNIT_EXPECTED, node->a->at,
                          "a share is written in %: 5 % of mix; a multiple with *: 2 * feed", NULL);
   }
-  if (m->ratio == RATIO_NONE && is_trace (m)) {
+  bool of_sum = node->b->kind == NODE_NAME && sum_way_on (ev->arena, node->b->text)
+                && m->ratio != RATIO_NONE && m->ratio != RATIO_PLAIN
+                && !name_find (ev->session, node->b->text, strlen (node->b->text));
+  if (of_sum || (m->ratio == RATIO_NONE && is_trace (m))) {
     return trace_of (ev, node, &quantity, NULL, state, out);
   }
   struct value whole;

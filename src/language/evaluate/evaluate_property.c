@@ -6,6 +6,7 @@
 #include "gas/analysis.h"
 #include "gas/composition.h"
 #include "gas/species.h"
+#include "language/evaluate/fuel.h"
 #include "language/evaluate/record.h"
 #include "language/session_private.h"
 #include "language/evaluate/wording.h"
@@ -140,7 +141,7 @@ water_content (struct evaluation *ev, const struct property_question *q, const s
   }
   out->kind = VALUE_PART;
   out->part = water->key;
-  out->species = (struct species_set) { { water }, 1 };
+  out->species = (struct species_set) { { water }, 1, NULL };
   out->moles = y;
   out->mass = y * water->molar_mass;
   RECORD (ev, .name = "water in a mole of the gas", .formula = "m = y M", .value = out->mass,
@@ -350,6 +351,10 @@ dispatch (struct evaluation *ev, const struct property_question *q, const struct
     return water_content (ev, q, of, out);
   case PROPERTY_PARTIAL_PRESSURE:
     return partial_pressure (ev, q, of, out);
+  case PROPERTY_VOLUME_FRACTION:
+  case PROPERTY_VOLUME_CONCENTRATION:
+  case PROPERTY_MIXING_FACTOR:
+    return property_unmixed (ev, q, of, out);
   case PROPERTY_TEMPERATURE:
   case PROPERTY_PRESSURE:
     return own_figure (ev, q, of, out);
@@ -378,6 +383,9 @@ dispatch (struct evaluation *ev, const struct property_question *q, const struct
   case PROPERTY_LOWER_FLAMMABLE_LIMIT:
   case PROPERTY_UPPER_FLAMMABLE_LIMIT:
     return property_flammable (ev, q, out);
+  case PROPERTY_DRY_F_FACTOR:            /* worked out before this */
+  case PROPERTY_WET_F_FACTOR:
+  case PROPERTY_CARBON_F_FACTOR:
   case PROPERTY_STATED_TOTAL:
   case PROPERTY_COUNT:
     break;
@@ -414,6 +422,10 @@ evaluate_property (struct evaluation *ev, const struct node *node, const struct 
                                  .p = UNSTATED,
                         .Z = UNSTATED };
   struct value of;
+  enum f_factor factor;
+  if (property_is_f_factor (q.property, &factor)) {
+    return property_f_factor (ev, node, state, out);
+  }
   if (!evaluate (ev, node->b, state, &of)) {
     return false;
   }

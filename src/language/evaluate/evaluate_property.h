@@ -32,6 +32,9 @@ bool property_virial (struct evaluation *, const struct property_question *, str
   MUST_CHECK;
 bool property_flammable (struct evaluation *, const struct property_question *, struct value *)
   MUST_CHECK;
+/* Volume fraction, volume concentration, mixing factor (unmixed.c).  */
+bool property_unmixed (struct evaluation *, const struct property_question *,
+                       const struct value *of, struct value *) MUST_CHECK;
 /* Hydrocarbon dew point (evaluate_dew.c).  */
 bool property_dew_point (struct evaluation *, const struct property_question *, struct value *)
   MUST_CHECK;

@@ -202,7 +202,7 @@ static const struct analysis *
 without_gas (struct evaluation *ev, const struct change_of *c, const struct analysis *before,
              const struct composition *gas)
 {
-  struct species_set tracers = { { ev->session->oxygen }, 1 };
+  struct species_set tracers = { { ev->session->oxygen }, 1, NULL };
   struct tracing first = { .gas = gas, .by = ev->session->oxygen->key };
   if (!c->node->c && !(composition_fraction (gas, ev->session->oxygen) > 0)) {
     fault_set_at (ev->fault, MESSAGE_UNFINISHED, behind (c->node->b->at), NULL, NULL);

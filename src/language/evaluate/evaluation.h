@@ -161,6 +161,8 @@ struct gas_value *gas_of_analysis (struct evaluation *, const struct analysis *,
    a lump that is a gas of the user's (C6+).  Kinds name-unknown, name-open, kind-wrong.         */
 bool species_named (struct evaluation *, const struct node *name, struct species_set *)
   MUST_CHECK;
+/* "NOx of GAS is ...", where a name of more than one meaning is a sum; else null.  */
+const char *sum_way_on (struct arena *, const char *name);
 
 /* ---- States (state.c) ---- */
 

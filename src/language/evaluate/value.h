@@ -52,7 +52,8 @@ struct measure {
 
 /* The species one name stands for.  */
 enum { SPECIES_SET_MOST = 16 };
-struct species_set { const struct species *at[SPECIES_SET_MOST]; size_t count; };
+struct species_set { const struct species *at[SPECIES_SET_MOST]; size_t count;
+                     const char *counted_as; };          /* of NOx by mass: "NO2"; or null */
 
 struct value {
   enum value_kind kind;

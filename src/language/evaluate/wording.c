@@ -178,6 +178,15 @@ assume_barometer (struct evaluation *ev, const char *figure, const char *unit, d
 }
 
 void
+assume_counted_as (struct evaluation *ev, const char *sum, const char *component)
+{
+  if (ev->describe) {
+    evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_COUNTED_AS,
+                                                  .fact = { sum, component } });
+  }
+}
+
+void
 assume_family (struct evaluation *ev, enum reference_family family)
 {
   evaluation_touch (ev, touch_family (family));

@@ -141,6 +141,41 @@ parse_name (struct parser *p, const char *way_on)
   return take_name (p);
 }
 
+size_t
+fuel_words (const struct parser *p)
+{
+  struct look look = look_here (p);
+  size_t words = 0;
+  if (look.token.kind == TOKEN_WORD && name_length (p, &look.token)
+                                       > look.token.end - look.token.start)
+    return 0;                            /* a component of several words */
+  while (look.token.kind == TOKEN_WORD
+         && (!word_is_reserved (p->scan.text + look.token.start, look.token.end - look.token.start)
+             || (words > 0 && token_is (p, &look.token, "gas")))
+         && !token_is (p, &look.token, "counted")) {
+    words++;
+    look_next (&look);
+  }
+  return words;
+}
+
+struct node *
+parse_fuel (struct parser *p, const char *way_on)
+{
+  size_t words = fuel_words (p);
+  if (words < 2)
+    return parse_name (p, way_on);
+  struct node *name = node_new (p, NODE_NAME, p->token.at);
+  const char *text = token_text (p, &p->token);
+  for (token_take (p); words > 1; words--) {
+    text = arena_format (p->arena, "%s-%s", text, token_text (p, &p->token));
+    token_take (p);
+  }
+  name->text = text;
+  node_close (p, name);
+  return name;
+}
+
 struct node *
 parse_names (struct parser *p, const char *way_on)
 {

@@ -145,6 +145,10 @@ struct node *node_link (struct parser *, enum node_kind, struct node *a, struct 
 bool at_name (const struct parser *);
 /* NAME, where one is referred to.  */
 struct node *parse_name (struct parser *, const char *way_on);
+/* The name of a fuel, of several words too: natural gas is natural-gas.  */
+struct node *parse_fuel (struct parser *, const char *way_on);
+/* How many words of it stand here; 0 or 1: no name of several.  */
+size_t fuel_words (const struct parser *);
 /* NAME { "," NAME }  */
 struct node *parse_names (struct parser *, const char *way_on);
 /* NAME, where one is made.  */

@@ -74,7 +74,8 @@ figure_fits (enum setting setting, const struct node *figure)
     return unit_is_pressure (unit) && (unit->sort == UNIT_SCALE || unit->sort == UNIT_ABSOLUTE);
   if (setting == SETTING_SITE_ALTITUDE)
     return dimension_equal (unit->dimension, DIMENSION_LENGTH);
-  if (setting == SETTING_OXYGEN_IN_AIR || setting == SETTING_LOWER_FLAMMABLE_LIMIT)
+  if (setting == SETTING_OXYGEN_IN_AIR || setting == SETTING_WATER_IN_AIR
+      || setting == SETTING_LOWER_FLAMMABLE_LIMIT)
     return unit->ratio == RATIO_MOLE || unit->ratio == RATIO_VOLUME;
   if (setting == SETTING_TOTAL_TOLERANCE || setting == SETTING_SMALLEST_EFFECT)
     return unit->ratio == RATIO_PLAIN || unit->ratio == RATIO_MOLE;
@@ -132,6 +133,7 @@ parse_setting (struct parser *p, struct statement *statement)
   case SETTING_COMBUSTION:
     return expect_word (p, "at", "set combustion at 25 degC") && parse_figure (p, statement);
   case SETTING_SITE_PRESSURE: case SETTING_SITE_ALTITUDE: case SETTING_OXYGEN_IN_AIR:
+  case SETTING_WATER_IN_AIR:
   case SETTING_TOTAL_TOLERANCE: case SETTING_COVERAGE: case SETTING_SMALLEST_EFFECT:
   case SETTING_DIGITS: case SETTING_COUNT:
   default:

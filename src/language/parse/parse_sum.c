@@ -323,7 +323,10 @@ parse_chain_link (struct parser *p, bool behind_of)
   struct node *node = parse_head (p, behind_of);
   if (node == NULL || !accept_word (p, "of"))
     return node != NULL ? parse_changes (p, node) : NULL;
-  struct node *of = enter (p) ? parse_chain_link (p, true) : NULL;
+  bool fuel = node->kind == NODE_PROPERTY
+              && (node->property == PROPERTY_DRY_F_FACTOR || node->property == PROPERTY_WET_F_FACTOR
+                  || node->property == PROPERTY_CARBON_F_FACTOR) && fuel_words (p) > 1;
+  struct node *of = !enter (p) ? NULL : fuel ? parse_fuel (p, NULL) : parse_chain_link (p, true);
   p->depth--;
   return of != NULL ? node_link (p, NODE_OF, node, of) : NULL;
 }

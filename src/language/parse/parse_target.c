@@ -43,7 +43,8 @@ counts_energy (const struct unit *unit)
          || dimension_equal (d, DIMENSION_POWER)
          || dimension_equal (dimension_times (d, DIMENSION_MASS), DIMENSION_ENERGY)
          || dimension_equal (dimension_times (d, DIMENSION_AMOUNT), DIMENSION_ENERGY)
-         || dimension_equal (dimension_times (d, DIMENSION_VOLUME), DIMENSION_ENERGY);
+         || dimension_equal (dimension_times (d, DIMENSION_VOLUME), DIMENSION_ENERGY)
+         || dimension_equal (dimension_times (d, DIMENSION_ENERGY), DIMENSION_MASS);
 }
 
 /* UNIT { word }  */
@@ -162,21 +163,74 @@ at_picture (const struct parser *p)
          && ahead.token.kind == TOKEN_TEXT;
 }
 
+/* "burning" FUEL [ "by" NAME ]  */
+static bool
+parse_burning (struct parser *p, struct target *target)
+{
+  target->burning = parse_fuel (p, "burning natural-gas, or a gas: burning raw");
+  if (target->burning == NULL || !accept_word (p, "by"))
+    return target->burning != NULL;
+  target->tracer = parse_name (p, "by O2, or by CO2");
+  return target->tracer != NULL;
+}
+
+/* "with" PROPERTY quantity, of an F factor; else nothing is taken  */
+static bool
+parse_factor (struct parser *p, struct target *target)
+{
+  struct parser ahead = *p;
+  enum property property;
+  size_t words = accept_word (&ahead, "with") ? property_here (&ahead, &property) : 0;
+  if (words == 0 || (property != PROPERTY_DRY_F_FACTOR && property != PROPERTY_WET_F_FACTOR
+                     && property != PROPERTY_CARBON_F_FACTOR))
+    return true;
+  token_take (p);
+  take_words (p, words);
+  if (!at_number (p))
+    return fail_here (p, MESSAGE_NUMBER_EXPECTED, "with dry F factor 8710 ft3/MMBtu", NULL);
+  struct stated_property *factor = ARENA_NEW (p->arena, struct stated_property);
+  factor->property = property;
+  factor->quantity = parse_quantity (p, IN_STATE);
+  target->factor = factor;
+  return factor->quantity != NULL;
+}
+
+/* [ "counted as" NAME ] [ "burning" ... | "with" ... ], in either order  */
+static bool
+parse_counting (struct parser *p, struct target *target)
+{
+  for (;;) {
+    size_t words = target->counted_as == NULL ? words_here (p, "counted as") : 0;
+    if (words > 0) {
+      take_words (p, words);
+      target->counted_as = parse_name (p, "counted as NO2");
+      if (target->counted_as == NULL)
+        return false;
+    }
+    else if (target->burning != NULL || target->factor != NULL)
+      return true;
+    else if (accept_word (p, "burning")) {
+      if (!parse_burning (p, target))
+        return false;
+    }
+    else if (!parse_factor (p, target))
+      return false;
+    else if (target->factor == NULL)
+      return true;
+  }
+}
+
 static struct target *
 parse_target (struct parser *p)
 {
-  /* target = UNIT { word } [ "counted as" NAME ] ( "at" ... | { "," ... } ) [ "as" NAME ]  */
+  /* target = UNIT { word } [ "counted as" NAME ] [ "burning" ... ] ( "at" ... | { "," ... } )
+              [ "as" NAME ]  */
   struct target *target = ARENA_NEW (p->arena, struct target);
   struct unit_read read;
   if (!parse_target_unit (p, target, &read))
     return NULL;
-  size_t words = words_here (p, "counted as");
-  if (words > 0) {
-    take_words (p, words);
-    target->counted_as = parse_name (p, "counted as NO2");
-    if (target->counted_as == NULL)
-      return NULL;
-  }
+  if (!parse_counting (p, target))
+    return NULL;
   if (!parse_conditions (p, target, &read))
     return NULL;
   if (!at_picture (p) && accept_word (p, "as")) {
@@ -194,7 +248,8 @@ check_comma (struct parser *p)
 {
   struct unit_read read;
   struct scanner behind;
-  if (!unit_at (p, &p->token, &read, &behind) || words_here (p, "counted as") > 0)
+  if (!unit_at (p, &p->token, &read, &behind) || words_here (p, "counted as") > 0
+      || at_word (p, "burning"))
     return true;
   return fail_here (p, MESSAGE_COMMA_MISSING, read.text,
                     "targets are parted by commas");

@@ -1,5 +1,7 @@
 #include "config.h"
 #include <math.h>
+#include <stdio.h>
+#include <stdlib.h>
 #include <string.h>
 #include "gas/composition.h"
 #include "libtest.h"
@@ -7,6 +9,7 @@
 #include "support/arena.h"
 #include "support/fault.h"
 #include "support/sum.h"
+#include "units/constants.h"
 
 static struct arena *arena;
 static struct fault fault;
@@ -316,6 +319,102 @@ kept_beyond_its_arena (void)
   arena_destroy (lasting);
 }
 
+/* ISO 14912:2003: with Z 1 and 0.9 equal moles fill 1/1.9 and 0.9/1.9 of the volume.  */
+static void
+volume_fractions (void)
+{
+  start ();
+  const struct part parts[] = { { &sample[H2], 1 }, { &sample[CO2], 1 } };
+  const double Z[] = { 1, 0.9 };
+  double phi[2];
+  const struct composition *c = make (2, parts);
+  NEED (c != NULL);
+  composition_volume_fractions (c, Z, phi);
+  NEAR (phi[0], 0.526315789473684, 1e-14);
+  NEAR (phi[1], 0.473684210526316, 1e-14);
+  const struct part back[] = { { &sample[H2], phi[0] / Z[0] }, { &sample[CO2], phi[1] / Z[1] } };
+  c = make (2, back);
+  NEED (c != NULL);
+  NEAR (c->fraction[0], 0.5, 4e-16);
+}
+
+/* ---- ISO 14912 from stated molar masses and Z ---- */
+
+/* A row of iso14912.tsv: the parts with what is given of them.  */
+struct quantities { size_t n; struct species species[4]; double Z[4], given[4]; };
+
+static void
+read_quantities (const char *text, struct quantities *q)
+{
+  memset (q, 0, sizeof *q);
+  static char key[4][8];
+  while (*text && q->n < 4) {
+    double M;
+    int used = 0;
+    if (sscanf (text, "%7[^:]:%lf:%lf:%lf %n", key[q->n], &M, &q->Z[q->n], &q->given[q->n], &used)
+        != 4)
+      break;
+    q->species[q->n] = (struct species) { .key = key[q->n], .molar_mass = M * 1e-3 };
+    q->n++;
+    text += used;
+  }
+}
+
+/* The composition, from shares by amount, mass or volume, or masses per volume.  */
+static const struct composition *
+from_given (const char *given, const struct quantities *q)
+{
+  struct part parts[4];
+  for (size_t i = 0; i < q->n; i++) {
+    double divisor = strcmp (given, "x") == 0 ? 1 : strcmp (given, "phi") == 0
+                       ? q->Z[i] : q->species[i].molar_mass;
+    parts[i] = (struct part) { &q->species[i], q->given[i] / divisor };
+  }
+  return make (q->n, parts);
+}
+
+/* c_i = x_i p/(Z R T), rho_i = c_i M_i.  */
+static double
+quantity_of (const struct composition *c, const struct quantities *q, char *cells[])
+{
+  double p = strtod (cells[3], NULL), T = strtod (cells[4], NULL), phi[4], sum = 0;
+  for (size_t i = 0; i < c->count; i++)
+    sum += c->fraction[i] * q->Z[i];
+  double Z = *cells[5] ? strtod (cells[5], NULL) : sum, n = p / (Z * GAS_CONSTANT * T);
+  double f = composition_mixing_factor (c, q->Z, Z);
+  size_t i = 0;
+  composition_volume_fractions (c, q->Z, phi);
+  while (i + 1 < c->count && strcmp (c->species[i]->key, cells[7]) != 0)
+    i++;
+  const struct { const char *name; double value; } all[] = {
+    { "x", c->fraction[i] }, { "w", c->fraction[i] * c->species[i]->molar_mass / c->molar_mass },
+    { "phi", phi[i] }, { "sig", phi[i] / f }, { "c", n * c->fraction[i] },
+    { "rho", n * c->fraction[i] * c->species[i]->molar_mass }, { "M", c->molar_mass * 1e3 },
+    { "density", n * c->molar_mass }, { "f_mix", f }
+  };
+  for (size_t k = 0; k < sizeof all / sizeof all[0]; k++)
+    if (strcmp (all[k].name, cells[6]) == 0)
+      return all[k].value;
+  return (double) NAN;
+}
+
+static void
+one_quantity (char *cells[])
+{
+  struct quantities q;
+  start ();
+  read_quantities (cells[2], &q);
+  const struct composition *c = from_given (cells[1], &q);
+  NEED (c != NULL && c->count == q.n);
+  NEAR (quantity_of (c, &q, cells), strtod (cells[8], NULL), 3e-6);      /* M, Z have six digits */
+}
+
+static void
+quantities (void)
+{
+  SAME_INT (test_each_row ("numbers/iso14912.tsv", 10, one_quantity), 126);
+}
+
 static void
 a_thousand_species (void)
 {
@@ -348,6 +447,8 @@ static const struct test_case cases[] = {
   { "unusable amounts", unusable_amounts },
   { "tiny and huge amounts", tiny_and_huge_amounts },
   { "kept beyond its arena", kept_beyond_its_arena },
+  { "volume fractions", volume_fractions },
+  { "quantities of ISO 14912", quantities },
   { "a thousand species", a_thousand_species },
   { NULL, NULL }
 };

@@ -291,6 +291,15 @@ print_targets (struct text *out, const struct target *target)
     text_add_format (out, " (to %s", target->unit_text);
     print_words (out, target->words);
     print_optional (out, "counted-as", target->counted_as);
+    print_optional (out, "burning", target->burning);
+    print_optional (out, "by", target->tracer);
+    if (target->factor != NULL) {
+      text_add (out, " (");
+      print_joined (out, property_text (target->factor->property));
+      text_add_char (out, ' ');
+      print (out, target->factor->quantity);
+      text_add_char (out, ')');
+    }
     if (target->state != NULL) {
       text_add (out, " (at");
       print_items (out, target->state);

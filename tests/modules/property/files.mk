@@ -8,6 +8,13 @@ suites += %D%/t_calorific
 %C%_t_calorific_SOURCES = %D%/t_calorific.c
 %C%_t_calorific_LDADD = $(with_property)
 
+suites += %D%/t_emission
+%C%_t_emission_SOURCES = \
+  %D%/gases.c \
+  %D%/gases.h \
+  %D%/t_emission.c
+%C%_t_emission_LDADD = $(with_property)
+
 suites += %D%/t_enhancement
 %C%_t_enhancement_SOURCES = \
   %D%/gases.c \
