@@ -127,7 +127,8 @@ headings_add (struct text *out, const struct report_style *style, const struct c
   text_add_char (out, '\n');
 }
 
-/* A row, with the weight of a figure for its numbers; no blanks at the end.  */
+/* A row, with the weight of a figure for its numbers; no blanks at the end.  A text in the last
+   column is folded.                                                                             */
 static void
 row_add (struct text *out, const struct report_style *style, const struct card_row *row,
          const struct band *band)
@@ -135,6 +136,7 @@ row_add (struct text *out, const struct report_style *style, const struct card_r
   struct text scratch;
   text_init (&scratch);
   size_t blanks = 0;
+  struct fold fold = fold_here (out);
   for (size_t k = 0; k < band->count; k++) {
     const struct column *column = &band->columns[band->which[k]];
     const struct cell *cell = &row->cells[band->which[k]];
@@ -144,11 +146,13 @@ row_add (struct text *out, const struct report_style *style, const struct card_r
     blanks += band->gap + column->before - before;
     if (width > 0) {
       text_add_repeated (out, ' ', blanks);
+      fold = fold_here (out);
       text_add (out, shown);
       blanks = 0;
     }
     blanks += column->behind + before - width;
   }
+  fold_line (out, style, fold);
   text_add_char (out, '\n');
   text_clear (&scratch);
 }
@@ -225,7 +229,7 @@ rows_add (struct text *out, const struct report_style *style, const struct card 
   text_clear (&scratch);
   struct band band = { columns, name_column (style, card), GAP, card->columns, which };
   const size_t used = MARGIN + band.name_width;
-  const size_t room = used < LINE_WIDTH ? LINE_WIDTH - used : 0;
+  const size_t room = used < line_width (style) ? line_width (style) - used : 0;
   if (card->together > 0 && columns_width (&band, 0, card->columns) > room)
     band.gap = CLOSE_GAP;
   if (card->together > 0 && columns_width (&band, 0, card->columns) > room)
@@ -244,7 +248,9 @@ report_card (struct text *out, const struct report_style *style, const struct ca
     rows_add (out, style, card, columns, which);
   for (const struct card_line *l = card->lines; l != NULL; l = l->next) {
     text_add_repeated (out, ' ', MARGIN);
+    const struct fold fold = { out->length, MARGIN + 2 };
     shown_add (out, style, l->text);
+    fold_line (out, style, fold);
     text_add_char (out, '\n');
   }
   memory_release (which);

@@ -103,9 +103,11 @@ row_figure (struct text *out, const struct report_style *style, const struct col
   text_clear (&figure);
 }
 
+/* Folds what may be of the line, and ends it.  */
 static void
-line_end (struct text *out)
+line_end (struct text *out, const struct report_style *style, struct fold fold)
 {
+  fold_line (out, style, fold);
   while (out->length > 0 && out->bytes[out->length - 1] == ' ')
     out->bytes[--out->length] = '\0';
   text_add_char (out, '\n');
@@ -205,6 +207,7 @@ sheet_add (struct text *out, const struct report_style *style, const struct chec
   for (const struct check_figure *f = v->figures; f != NULL; f = f->next) {
     row_open (out, style, column, figure_label (f));
     row_figure (out, style, column, f->computed, f->unit);
+    const struct fold fold = fold_here (out);
     text_add (out, f->holds ? f->as_written ? "agrees as written" : "agrees"
                             : "stands alone");
     text_add (out, ", stated ");
@@ -214,13 +217,14 @@ sheet_add (struct text *out, const struct report_style *style, const struct chec
       effect_write (out, f->deviation);
       text_add (out, ")");
     }
-    line_end (out);
+    line_end (out, style, fold);
   }
   for (const struct check_reading *r = v->readings; r != NULL; r = r->next) {
     row_open (out, style, column, r == v->readings ? "reads as" : NULL);
     text_add_repeated (out, ' ', GAP);
+    const struct fold fold = fold_here (out);
     shown_add (out, style, r->reading);
-    line_end (out);
+    line_end (out, style, fold);
   }
 }
 
@@ -230,6 +234,7 @@ computed_add (struct text *out, const struct report_style *style, const struct c
 {
   row_open (out, style, column, "computed");
   row_figure (out, style, column, v->computed, v->unit);
+  const struct fold fold = fold_here (out);
   weight_open (out, style, WEIGHT_DIM);
   const bool moist = a != NULL && a->moisture != NULL && *a->moisture != '\0';
   const bool based = a != NULL && a->basis != NULL && *a->basis != '\0';
@@ -249,7 +254,7 @@ computed_add (struct text *out, const struct report_style *style, const struct c
     coverage_write (out, a->coverage);
     text_clear (&figure);
   }
-  line_end (out);
+  line_end (out, style, fold);
 }
 
 static void
@@ -262,13 +267,15 @@ readings_add (struct text *out, const struct report_style *style, const struct c
     row_open (out, style, column, r != v->readings ? NULL : holds ? "fits too" : "fits");
     if (holds && shown == FITS_TOO) {
       text_add_repeated (out, ' ', GAP);
+      const struct fold fold = fold_here (out);
       text_add_format (out, "and %zu more", v->reading_count - shown);
-      line_end (out);
+      line_end (out, style, fold);
       return;
     }
     row_figure (out, style, column, r->value, r->unit);
+    const struct fold fold = fold_here (out);
     shown_add (out, style, r->reading);
-    line_end (out);
+    line_end (out, style, fold);
   }
 }
 
@@ -279,6 +286,7 @@ ruled_out_add (struct text *out, const struct report_style *style, const struct 
   for (const struct check_reading *r = v->ruled_out; r != NULL; r = r->next) {
     row_open (out, style, column, r == v->ruled_out ? "ruled out" : NULL);
     row_figure (out, style, column, r->value, r->unit);
+    const struct fold fold = fold_here (out);
     shown_add (out, style, r->reading);
     if (isfinite (r->deviation)) {
       const double over = 1 / (1 + r->deviation) - 1;
@@ -286,7 +294,7 @@ ruled_out_add (struct text *out, const struct report_style *style, const struct 
       percent_add (out, over);
       text_add (out, over > 0 ? " above the claim" : " below the claim");
     }
-    line_end (out);
+    line_end (out, style, fold);
   }
 }
 
@@ -296,12 +304,15 @@ needs_add (struct text *out, const struct report_style *style, const struct chec
 {
   for (const struct check_need *n = v->needs; n != NULL; n = n->next) {
     row_open (out, style, column, n == v->needs ? "instead" : NULL);
-    if (isfinite (n->value)) {
+    if (isfinite (n->value))
       row_figure (out, style, column, n->value, n->unit);
+    else
+      text_add_repeated (out, ' ', GAP);
+    const struct fold fold = fold_here (out);
+    if (isfinite (n->value)) {
       text_add (out, "would have to be the ");
       shown_add (out, style, n->what);
     } else {
-      text_add_repeated (out, ' ', GAP);
       text_add (out, "no ");
       shown_add (out, style, n->what);
       text_add (out, " from ");
@@ -312,7 +323,7 @@ needs_add (struct text *out, const struct report_style *style, const struct chec
       shown_add (out, style, n->unit);
       text_add (out, *n->unit ? " does it" : "does it");
     }
-    line_end (out);
+    line_end (out, style, fold);
   }
 }
 
@@ -328,11 +339,12 @@ report_check (struct text *out, const struct report_style *style, const struct r
   outcome_add (out, v);
   weight_close (out, style);
   text_add_repeated (out, ' ', GAP);
+  const struct fold fold = fold_here (out);
   if (v->figures != NULL)
     agreement_add (out, style, v);
   else
     difference_add (out, style, v, result->answers);
-  line_end (out);
+  line_end (out, style, fold);
   if (v->figures != NULL) {
     sheet_add (out, style, v, &column);
     return;

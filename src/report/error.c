@@ -86,14 +86,19 @@ quote_add (struct text *out, const struct report_style *style, const char *line,
                last > first ? last - start : first - start);
 }
 
-/* A text of one or more lines, each where printed text begins.  */
+/* A text of one or more lines, each where printed text begins.  What is to be typed is not
+   folded.                                                                                       */
 static void
-lines_add (struct text *out, const struct report_style *style, const struct text *lines)
+lines_add (struct text *out, const struct report_style *style, const struct text *lines,
+           bool folded)
 {
   for (size_t at = 0; at < lines->length;) {
     const size_t n = strcspn (lines->bytes + at, "\n");
     text_add_repeated (out, ' ', MARGIN);
+    const struct fold fold = { out->length, MARGIN + 2 };
     shown_add_bytes (out, style, lines->bytes + at, n);
+    if (folded)
+      fold_line (out, style, fold);
     text_add_char (out, '\n');
     at += n + 1;
   }
@@ -107,17 +112,20 @@ words_add (struct text *out, const struct report_style *style, const struct faul
   const bool joined = words->phrase.length > 0 && strchr (words->phrase.bytes, '\n') == NULL
                       && used + words->sentence.length + 2 + words->phrase.length <= PHRASE_WIDTH;
   if (before_quote) {
+    const struct fold fold = fold_here (out);
     shown_add (out, style, words->sentence.bytes);
     if (joined) {
       text_add (out, "; ");
       shown_add (out, style, words->phrase.bytes);
     }
+    if (used > 0)                       /* behind a place in a file the line stays whole */
+      fold_line (out, style, fold);
     text_add_char (out, '\n');
     return;
   }
   if (!joined)
-    lines_add (out, style, &words->phrase);
-  lines_add (out, style, &words->line);
+    lines_add (out, style, &words->phrase, true);
+  lines_add (out, style, &words->line, false);
 }
 
 static void

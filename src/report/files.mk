@@ -12,6 +12,7 @@ noinst_LIBRARIES += %D%/libreport.a
   %D%/csv.c \
   %D%/error.c \
   %D%/figure.c \
+  %D%/fold.c \
   %D%/formula.c \
   %D%/formula.h \
   %D%/help.c \

@@ -14,7 +14,9 @@ line_add (struct text *out, const struct report_style *style, const char *word, 
   if (text == NULL || *text == '\0')
     return;
   text_add_left (out, word, MARGIN);
+  const struct fold fold = { out->length, MARGIN + 2 };
   shown_add (out, style, text);
+  fold_line (out, style, fold);
   text_add_char (out, '\n');
 }
 

@@ -1,11 +1,12 @@
 /* Results and faults as text, JSON or CSV.
 
    Machine forms print every digit needed to read a number back; the text form rounds to
-   style->digits.  Nothing here knows a terminal's width or a locale.                            */
+   style->digits and folds lines at style->width.  Nothing here knows a terminal or a locale.    */
 #ifndef REPORT_REPORT_H
 #define REPORT_REPORT_H
 
 #include <stdbool.h>
+#include <stddef.h>
 
 struct fault; struct result; struct text;
 
@@ -16,6 +17,7 @@ struct report_style {
   bool unicode;                   /* may print characters outside ASCII (text form only) */
   bool weights;                   /* bold and dim by terminal escapes (text form only) */
   bool prompt;                    /* at a prompt: a blank line before an answer */
+  size_t width;                   /* of a line of the text form, 100 at most; 0: that */
 };
 
 /* Where a fault happened and what was typed there.  */

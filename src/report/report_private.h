@@ -20,7 +20,7 @@ struct report_origin; struct result; struct step; struct trend; struct workings_
 enum {
   MARGIN_MARK = 2,
   MARGIN = 6,
-  LINE_WIDTH = 100,             /* what a card that can be parted keeps within */
+  LINE_WIDTH = 100,             /* of a line, at most */
   CARD_WIDTH = 62,              /* of the line with the tab, without the margin */
   NAME_WIDTH = 10,              /* a name with its dots, at least */
   NAME_DOTS = 4,                /* a blank and three dots behind the longest name */
@@ -46,6 +46,17 @@ size_t shown_places (const struct report_style *, const char *string, size_t cha
 void leader_add (struct text *, const struct report_style *, const char *name, size_t width);
 /* The line that opens a card: the tab with its name, the kind of thing at the right end.  */
 void tab_add (struct text *, const struct report_style *, const char *title, const char *kind);
+
+/* fold.c: what a line may be wide; how wide the line is that OUT ends in.  */
+size_t line_width (const struct report_style *);
+size_t column_here (const struct text *out);
+/* What of a line may be folded: all behind FROM, and what goes on begins in column HANG.  */
+struct fold { size_t from, hang; };
+/* From here on, and under it.  */
+struct fold fold_here (const struct text *out);
+/* Folds the line that OUT ends in at blanks, where it is too wide; what goes on begins further to
+   the left where HANG is far to the right.                                                      */
+void fold_line (struct text *out, const struct report_style *, struct fold);
 
 void weight_open (struct text *, const struct report_style *, enum weight);
 void weight_close (struct text *, const struct report_style *);

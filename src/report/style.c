@@ -210,11 +210,13 @@ void
 tab_add (struct text *out, const struct report_style *style, const char *title, const char *kind)
 {
   const size_t used = 6 + shown_width (style, title) + 1 + shown_width (style, kind);
+  const size_t room = line_width (style) - MARGIN;
+  const size_t width = room < CARD_WIDTH ? room : CARD_WIDTH;
   text_add_repeated (out, ' ', MARGIN);
   text_add (out, "_/ ");
   shown_add (out, style, title);
   text_add (out, " \\_");
-  text_add_repeated (out, '_', used < CARD_WIDTH ? CARD_WIDTH - used : 2);
+  text_add_repeated (out, '_', used < width ? width - used : 2);
   if (kind != NULL && *kind != '\0') {
     text_add_char (out, ' ');
     shown_add (out, style, kind);

@@ -168,12 +168,17 @@ row_basis (struct row *row, const struct answer *answer, const struct columns *w
     row->blanks += wide->moisture + GAP_BASIS;
   row_blanks (row);
   weight_open (row->out, row->style, WEIGHT_DIM);
+  struct fold fold = fold_here (row->out);
   if (moist) {
     row_add (row, answer->moisture, wide->moisture);
     row->blanks += GAP_BASIS;
   }
-  if (based)
+  if (based) {
+    row_blanks (row);
+    fold.hang = column_here (row->out);
     row_add (row, answer->basis, 0);
+  }
+  fold_line (row->out, row->style, fold);
   weight_close (row->out, row->style);
 }
 
@@ -191,7 +196,9 @@ answers_add (struct text *out, const struct report_style *style, const struct re
       leader_add (out, style, row_name (a), wide.name);
       row.blanks = GAP_NAME;
     }
+    const struct fold fold = { out->length, MARGIN + 4 };
     row_figure (&row, a, figure, &wide);
+    fold_line (out, style, fold);         /* behind a name that is nearly a line */
     row_basis (&row, a, &wide);
     text_add_char (out, '\n');
     figure += strlen (figure) + 1;
@@ -220,15 +227,16 @@ remarks_add (struct text *out, const struct report_style *style, const struct re
 {
   for (const struct remark *r = remarks; r != NULL; r = r->next) {
     mark_add (out, style, mark, word);
-    const size_t start = out->length;
+    const struct fold fold = fold_here (out);
     remark_sentence (out, r);
-    shown_clean (out, style, start);
+    shown_clean (out, style, fold.from);
+    fold_line (out, style, fold);
     text_add_char (out, '\n');
   }
 }
 
-/* The lines of what was taken are written twice where a bracket stands behind one: once to learn
-   how long they are, once with the brackets in their column.                                    */
+/* Behind which column the brackets stand: that of the longest sentence whose line has room for its
+   bracket.                                                                                      */
 static size_t
 bracket_column (const struct report_style *style, const struct remark *remarks)
 {
@@ -239,13 +247,37 @@ bracket_column (const struct report_style *style, const struct remark *remarks)
     text_empty (&line);
     if (!remark_bracket (&line, r))
       continue;
+    const size_t bracket = shown_width (style, line.bytes);
     text_empty (&line);
     text_add (&line, "taken: ");
     remark_sentence (&line, r);
-    column = larger (column, shown_width (style, line.bytes) + 2);
+    const size_t used = shown_width (style, line.bytes) + 2;
+    if (MARGIN + used + bracket <= line_width (style))
+      column = larger (column, used);
   }
   text_clear (&line);
   return column;
+}
+
+/* The bracket at its column, or nearer where it would not fit, or on a line of its own.  */
+static void
+bracket_add (struct text *out, const struct report_style *style, const struct remark *remark,
+             size_t column)
+{
+  struct text words;
+  text_init (&words);
+  if (remark_bracket (&words, remark)) {
+    const size_t width = shown_width (style, words.bytes), used = column_here (out) + 2;
+    const size_t room = line_width (style);
+    column = used > column || column + width > room ? used : column;
+    if (column + width > room) {
+      text_add_char (out, '\n');
+      text_add_repeated (out, ' ', MARGIN + strlen ("taken: "));
+    } else
+      text_add_repeated (out, ' ', column + 2 - used);
+    shown_add (out, style, words.bytes);
+  }
+  text_clear (&words);
 }
 
 static void
@@ -254,19 +286,12 @@ taken_add (struct text *out, const struct report_style *style, const struct rema
   const bool alone = remarks->next == NULL;
   const size_t column = alone ? BRACKET_COLUMN : bracket_column (style, remarks);
   for (const struct remark *r = remarks; r != NULL; r = r->next) {
-    mark_add (out, style, '?', "");
-    const size_t start = out->length;
-    text_add (out, "taken: ");
+    mark_add (out, style, '?', "taken: ");
+    const struct fold fold = fold_here (out);
     remark_sentence (out, r);
-    shown_clean (out, style, start);
-    const size_t end = out->length;
-    const size_t used = utf8_characters (out->bytes + start, end - start);
-    text_add_repeated (out, ' ', used + 2 > column ? 2 : column - used);
-    const size_t bracket = out->length;
-    if (remark_bracket (out, r))
-      shown_clean (out, style, bracket);
-    else
-      out->length = end;
+    shown_clean (out, style, fold.from);
+    fold_line (out, style, fold);
+    bracket_add (out, style, r, MARGIN + column);
     text_add_char (out, '\n');
   }
 }

@@ -99,8 +99,10 @@ row_add (struct text *out, const struct report_style *style, const struct trend 
   leader_add (out, style, row->name, wide->name);
   text_add_repeated (out, ' ', GAP + wide->whole - whole);
   text_add (out, figure.bytes);
+  struct fold fold = fold_here (out);
   if (!isfinite (row->value)) {
     text_add_repeated (out, ' ', GAP);
+    fold = fold_here (out);
     shown_add (out, style, row->why);
   } else {
     text_add_repeated (out, ' ', wide->fraction - (figure.length - whole));
@@ -117,6 +119,7 @@ row_add (struct text *out, const struct report_style *style, const struct trend 
                                 range > 0 ? (row->value - trend->all.least) / range : 1);
     if (row->standing != TREND_USUAL || row->moisture != NULL || row->basis != NULL)
       text_add_repeated (out, ' ', BAR_WIDTH - bar + GAP);
+    fold = fold_here (out);
     text_add (out, standings[row->standing]);
     if (row->standing != TREND_USUAL && (row->moisture != NULL || row->basis != NULL))
       text_add (out, "   ");
@@ -125,6 +128,7 @@ row_add (struct text *out, const struct report_style *style, const struct trend 
       text_add (out, ", ");
     shown_add (out, style, row->basis);
   }
+  fold_line (out, style, fold);
   text_add_char (out, '\n');
   text_clear (&figure);
   text_clear (&spread);
@@ -144,10 +148,12 @@ numbers_add (struct text *out, const struct report_style *style, const char *bef
              const struct trend_numbers *n, const char *behind)
 {
   text_add_repeated (out, ' ', MARGIN);
+  const struct fold fold = { out->length, MARGIN + 2 };
   text_add_format (out, "%s%zu%s", before, n->count, behind);
   figure_add (out, style, ": mean ", n->mean);
   figure_add (out, style, "  .  standard deviation ", n->standard_deviation);
   figure_add (out, style, "  .  median ", n->median);
+  fold_line (out, style, fold);
   text_add_char (out, '\n');
 }
 
@@ -156,21 +162,27 @@ range_add (struct text *out, const struct report_style *style, const struct tren
 {
   const struct trend_numbers *n = &trend->all;
   text_add_repeated (out, ' ', MARGIN);
+  struct fold fold = { out->length, MARGIN + 2 };
   figure_add (out, style, "from ", n->least);
   text_add (out, " (");
   shown_add (out, style, n->least_of);
   figure_add (out, style, ") to ", n->greatest);
   text_add (out, " (");
   shown_add (out, style, n->greatest_of);
-  text_add (out, ")\n");
+  text_add_char (out, ')');
+  fold_line (out, style, fold);
+  text_add_char (out, '\n');
   if (trend->tested) {
     text_add_repeated (out, ' ', MARGIN);
+    fold.from = out->length;
     figure_add (out, style, "Grubbs' test: G ", trend->G);
     text_add (out, " of ");
     shown_add (out, style, trend->tested_of);
     figure_add (out, style, "; straggler above ", trend->straggler);
     figure_add (out, style, " (5 %), outlier above ", trend->outlier);
-    text_add (out, " (1 %)\n");
+    text_add (out, " (1 %)");
+    fold_line (out, style, fold);
+    text_add_char (out, '\n');
   }
 }
 
@@ -180,10 +192,12 @@ basis_add (struct text *out, const struct report_style *style, const struct tren
   if (trend->moisture == NULL && trend->basis == NULL)
     return;
   text_add_repeated (out, ' ', MARGIN);
+  const struct fold fold = { out->length, MARGIN + 2 };
   shown_add (out, style, trend->moisture);
   if (trend->moisture != NULL && trend->basis != NULL)
     text_add (out, ", ");
   shown_add (out, style, trend->basis);
+  fold_line (out, style, fold);
   text_add_char (out, '\n');
 }
 

@@ -32,10 +32,11 @@ name_width (const struct report_style *style, const struct balance_verdict *v)
   return used > NAME_COLUMN ? used : NAME_COLUMN;
 }
 
-/* No blanks at the end of a line.  */
+/* Folds what may be of the line, and ends it without blanks.  */
 static void
-end_line (struct text *out)
+end_line (struct text *out, const struct report_style *style, struct fold fold)
 {
+  fold_line (out, style, fold);
   while (out->length > 0 && out->bytes[out->length - 1] == ' ')
     out->bytes[--out->length] = '\0';
   text_add_char (out, '\n');
@@ -52,11 +53,13 @@ head_add (struct text *out, const struct report_style *style, const struct balan
   weight_close (out, style);
   const size_t used = shown_width (style, v->phrase);
   text_add_repeated (out, ' ', used < PHRASE_COLUMN ? PHRASE_COLUMN - used : 2);
+  struct fold fold = fold_here (out);
   shown_add (out, style, v->head);
-  end_line (out);
+  end_line (out, style, fold);
   text_add_repeated (out, ' ', MARGIN + width);
+  fold = fold_here (out);
   shown_add (out, style, v->counts);
-  end_line (out);
+  end_line (out, style, fold);
 }
 
 static void
@@ -65,8 +68,9 @@ facts_add (struct text *out, const struct report_style *style, const struct bala
   for (const struct verdict_row *row = v->facts; row != NULL; row = row->next) {
     text_add_repeated (out, ' ', MARGIN);
     column_add (out, style, row->cell[0], LABEL_COLUMN);
+    const struct fold fold = fold_here (out);
     shown_add (out, style, row->cell[1]);
-    end_line (out);
+    end_line (out, style, fold);
   }
 }
 
@@ -85,6 +89,20 @@ measure (const struct report_style *style, const struct balance_verdict *v, size
   wide[0] = !v->clash && wide[0] < NAME_COLUMN ? NAME_COLUMN : wide[0];
 }
 
+/* The cells from FIRST on, each in its column; the last that holds something may be folded.  */
+static void
+cells_add (struct text *out, const struct report_style *style, const char *const cell[4],
+           const size_t wide[4], int first)
+{
+  struct fold fold = fold_here (out);
+  for (int i = first; i < 4; i++) {
+    if (cell[i] != NULL && *cell[i] != '\0')
+      fold = fold_here (out);
+    column_add (out, style, cell[i], wide[i]);
+  }
+  end_line (out, style, fold);
+}
+
 static void
 rows_add (struct text *out, const struct report_style *style, const struct balance_verdict *v)
 {
@@ -98,17 +116,13 @@ rows_add (struct text *out, const struct report_style *style, const struct balan
     text_add_repeated (out, ' ', MARGIN);
     column_add (out, style, v->heading[0], wide[0]);
   }
-  for (int i = 1; i < 4; i++)
-    column_add (out, style, v->heading[i], wide[i]);
-  end_line (out);
+  cells_add (out, style, v->heading, wide, 1);
   for (const struct verdict_row *row = v->rows; row != NULL; row = row->next) {
     if (row->number > 0)
       text_add_format (out, "%4zu  ", row->number);
     else
       text_add_repeated (out, ' ', MARGIN);
-    for (int i = 0; i < 4; i++)
-      column_add (out, style, row->cell[i], wide[i]);
-    end_line (out);
+    cells_add (out, style, row->cell, wide, 0);
   }
 }
 

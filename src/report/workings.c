@@ -19,7 +19,7 @@
 #include "support/text.h"
 #include "units/workings.h"
 
-enum { PAGE = 100, INDENT = MARGIN + 4, HANG = INDENT + 2, NAME_MOST = 40, TERM_NAME = 8 };
+enum { INDENT = MARGIN + 4, HANG = INDENT + 2, NAME_MOST = 40, TERM_NAME = 8 };
 
 void
 step_name (struct text *out, const struct step *step)
@@ -31,36 +31,16 @@ step_name (struct text *out, const struct step *step)
   text_add (out, step->of);
 }
 
-/* Adds WORDS, broken at blanks so that no line passes the page; FIRST and REST are the indents.  */
+/* Adds WORDS, folded; FIRST and REST are the indents.  */
 static void
 wrapped_add (struct text *out, const struct report_style *style, const char *words, size_t first,
              size_t rest)
 {
-  struct text shown;
-  size_t column = first, blanks = 0;
-  bool begun = false;
-  text_init (&shown);
-  shown_add (&shown, style, words);
   text_add_repeated (out, ' ', first);
-  for (const char *at = shown.length > 0 ? shown.bytes : ""; *at != '\0';) {
-    const size_t n = strcspn (at, " "), width = utf8_characters (at, n);
-    if (begun && column + blanks + width > PAGE) {
-      text_add_char (out, '\n');
-      text_add_repeated (out, ' ', rest);
-      column = rest;
-    } else {
-      text_add_repeated (out, ' ', blanks);
-      column += blanks;
-    }
-    text_add_bytes (out, at, n);
-    column += width;
-    begun = true;
-    at += n;
-    blanks = strspn (at, " ");
-    at += blanks;
-  }
+  const struct fold fold = { out->length, rest };
+  shown_add (out, style, words);
+  fold_line (out, style, fold);
   text_add_char (out, '\n');
-  text_clear (&shown);
 }
 
 /* ---- One step ---- */
@@ -248,7 +228,7 @@ body_add (struct text *out, const struct report_style *style, const struct step 
   sources_write (&sources, step);
   const size_t width = INDENT + shown_width (style, formula.bytes) + GAP_SOURCE
                        + strlen ("[]") + shown_width (style, sources.bytes);
-  const bool apart = width > PAGE || needs_terms (step) || step->solved != NULL;
+  const bool apart = width > line_width (style) || needs_terms (step) || step->solved != NULL;
   if (!apart) {
     text_add (&formula, formula.length > 0 ? "   [" : "[");
     text_add_bytes (&formula, sources.bytes, sources.length);

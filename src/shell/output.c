@@ -85,6 +85,13 @@ show_paged (struct output *output)
   return true;
 }
 
+/* The width of the terminal that FD is; 0: it is none.  */
+static size_t
+width_of (int fd)
+{
+  return isatty (fd) ? screen_size (fd).columns : 0;
+}
+
 void
 output_result (struct output *output, const struct result *result, bool paged)
 {
@@ -94,6 +101,7 @@ output_result (struct output *output, const struct result *result, bool paged)
     output_flush (output);
   if (output->headed && !output->prompt && output->format == REPORT_TEXT)
     text_add_char (&output->pending, '\n');     /* answers of two statements stand apart */
+  output->style.width = width_of (output->fd);
   report_result (&output->pending, output->format, &output->style, result, !output->headed);
   output->headed = true;
   if (output->prompt && output->format == REPORT_TEXT) {
@@ -126,6 +134,7 @@ output_fault (struct output *output, const struct fault *fault,
   }
   output_flush (output);
   text_init (&said);
+  output->fault_style.width = width_of (STDERR_FILENO);
   report_fault (&said, output->format, &output->fault_style, fault, origin);
   write_error (&said);
   text_clear (&said);

@@ -128,7 +128,8 @@ tell "$(for note in blower controller lpg permit; do
   "each files its note"
 tell "$(for quarrel in quarrel_*.gw; do
     "$GASWRIGHT" "$quarrel" | awk -v name="$quarrel" '
-      / READINGS? FITS? | HOLDS | NOTHING EXPLAINS IT / { lines = 0; seen = 1 } { lines++ }
+      / READINGS? FITS? | HOLDS | NOTHING EXPLAINS IT / { lines = over = 0; seen = 1 }
+      /^$/ { over = 1 } !over { lines++ }
       END { if (!seen || lines > 20) print name ": " lines " lines, verdict " seen + 0 }'
   done)" "each verdict takes one screen"
 

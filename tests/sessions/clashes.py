@@ -114,7 +114,7 @@ def blend(tap):
     for line, want in ((3, (100 / 3, 100)), (4, (0, 200 / 3))):
         got = ends.get(BLEND[line].strip(), (None, None))
         wrong += [session.off(a, b, 1e-6, "abs") for a, b in zip(got, want)]
-    wrong.append("" if "1 of them by last digits alone" in session.run(text, "text")[1]
+    wrong.append("" if "1 of them by last digits alone" in session.unfolded(session.run(text, "text")[1])
                  else "the count does not say so")
     error = session.run(text + "rich in kg/h\n")[1].splitlines()[-1]
     wrong.append("" if '"error":' in error else "rich is told: " + error)

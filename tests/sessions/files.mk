@@ -34,4 +34,5 @@ session_tests = \
   %D%/treatments.sh \
   %D%/trims.sh \
   %D%/uncertainty.sh \
+  %D%/widths.sh \
   %D%/workings.sh

@@ -16,13 +16,17 @@ def figure(value):
 def says(row, answer, thing, text):
     """Machines and people both get what ROW asks of ANSWER; else what there is instead."""
     pattern, where = re.compile(row["pattern"]), row["where"]
+
+    def found_in(text):
+        return pattern.search(text) or pattern.search(session.unfolded(text))
+
     if where == "balance":
         verdict = thing["balance"]
         here = [verdict["phrase"], verdict["head"], *(": ".join(one) for one in verdict["says"]),
                 *verdict["redundant"], *verdict["conflict"]]
         if not any(pattern.search(one) for one in here):
             return ["nothing like '%s' in JSON:" % row["pattern"], *here]
-        return [] if pattern.search(text) else ["nothing like '%s' in text" % row["pattern"]]
+        return [] if found_in(text) else ["nothing like '%s' in text" % row["pattern"]]
     if where in ("readings", "ruled_out"):
         found = thing["readings"] if where == "readings" else thing["check"]["ruled_out"]
         here = [one["reading"] for one in found]
@@ -31,11 +35,11 @@ def says(row, answer, thing, text):
     if not any(pattern.search(one) for one in here):
         return ["nothing like '%s' in JSON:" % row["pattern"], *here]
     if where in ("readings", "ruled_out"):
-        return [] if pattern.search(text) else ["nothing like '%s' in text" % row["pattern"]]
+        return [] if found_in(text) else ["nothing like '%s' in text" % row["pattern"]]
     # In text the columns are blanks apart, and remarks have their bracket in a column.
     start, gap = {"basis": (re.escape(answer.get("label", "")), ", "), "taken": (r"\?", " "),
                   "notes": ("~", " "), "cautions": ("!", " ")}[where]
-    lines = [re.sub(" {2,}", gap, line.strip()) for line in text.splitlines()
+    lines = [re.sub(" {2,}", gap, line.strip()) for line in session.unfolded_lines(text)
              if re.match(" *" + start, line)]
     if not any(pattern.search(line) for line in lines):
         return ["nothing like '%s' in text:" % row["pattern"], *lines]

@@ -29,6 +29,22 @@ def run(statements, form="json", options=(), locale=None):
     return done.returncode, done.stdout.decode(), done.stderr.decode()
 
 
+def unfolded(text):
+    """TEXT as one line: where lines are folded does not count."""
+    return " ".join(text.split())
+
+
+def unfolded_lines(text):
+    """The lines of TEXT, each with what was folded below it."""
+    lines = []
+    for line in text.splitlines():
+        if line.startswith(" " * 10) and lines and lines[-1]:
+            lines[-1] += " " + line.strip()
+        else:
+            lines.append(line)
+    return lines
+
+
 def answers(statements, options=()):
     """The objects that STATEMENTS answer with, in their order."""
     return [json.loads(line) for line in run(statements, "json", options)[1].splitlines()]

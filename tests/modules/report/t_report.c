@@ -190,7 +190,49 @@ no_figure_is_null (void)
   arena_destroy (arena);
 }
 
+/* Folded at any width, a line keeps its words and stays within it, but for a wider word.  */
+static void
+lines_are_folded (void)
+{
+  static const char line[] = "met: wobbe of grid within 48 .. 50.5 MJ/m3 \u00B1 0.4; every moved "
+    "quantity stays above zero, \033[2mso the aim lies\033[0m within reach of what is mixed";
+  struct text text;
+  text_init (&text);
+  for (size_t width = 30; width < 130; width++) {
+    const struct report_style style = { .digits = 6, .unicode = true, .width = width };
+    const size_t most = width < 40 ? 40 : width > 100 ? 100 : width;
+    test_about ("%zu characters", width);
+    text_empty (&text);
+    text_add (&text, "  ~   note: ");
+    const struct fold fold = fold_here (&text);
+    SAME_INT (fold.hang, 12);
+    text_add (&text, line);
+    fold_line (&text, &style, fold);
+    const char *want = line;
+    size_t column = 12;
+    for (const char *at = text.bytes + 12; *at != '\0'; at++) {
+      if (*at == '\n') {
+        CHECK (column <= most);
+        CHECK (strspn (at + 1, " ") == 12 && *want == ' ');
+        column = 12;
+        at += 12;
+        want++;
+        continue;
+      }
+      CHECK (*at == *want);
+      if (*at == '\033')                /* four bytes that take no place */
+        column -= strncmp (at, "\033[2m", 4) == 0 || strncmp (at, "\033[0m", 4) == 0 ? 4 : 0;
+      column += (*at & 0xC0) != 0x80;
+      want++;
+    }
+    CHECK (column <= most && *want == '\0');
+    CHECK (strstr (text.bytes, "50.5\n") == NULL);      /* a figure stays with its unit */
+  }
+  text_clear (&text);
+}
+
 static const struct test_case cases[] = {
+  { "lines are folded at blanks", lines_are_folded },
   { "text is safe to show, in ASCII and UTF-8", text_is_safe_to_show },
   { "places on a screen are counted", places_on_a_screen },
   { "strings of JSON are escaped and valid", json_strings },
