@@ -3,6 +3,7 @@
 
 #include <math.h>
 #include <string.h>
+#include "balance/null_space.h"
 #include "balance/program.h"
 #include "balance/rank.h"
 #include "balance/reduce.h"
@@ -75,11 +76,13 @@ find_step (struct arena *arena, const struct core *core, const struct rows *bent
 {
   const struct system *system = core->system;
   size_t width = system->freedom;
-  double *h = system_project (arena, system, bent, width, system->null), *moved;
+  double *null = null_space_dense (arena, system->null), *moved;
+  double *h = system_project (arena, system, bent, width, null);
   double *z = ARENA_ARRAY (arena, width + 1, double);
   struct space space = space_make (arena, bent->count, width, h);
   space_solve (arena, &space, bent->right, z);
-  moved = matrix_product (arena, system->columns, width, 1, system->null, z);
+  moved = ARENA_ARRAY (arena, system->columns + 1, double);
+  null_space_move (system->null, z, moved);
   for (size_t j = 0; j < system->columns; j++) {
     step[j] = moved[j] * system->scale[j];
   }
@@ -207,12 +210,14 @@ look_around (struct core *core)
   for (size_t n = 0; n < AROUND; n++) {
     double *v = ARENA_ARRAY (core->arena, columns, double), part;
     double *step = ARENA_ARRAY (core->arena, columns, double), size = largest (columns, core->v);
+    double *z = ARENA_ARRAY (core->arena, core->freedom + 1, double);
     for (size_t k = 0; k < core->freedom; k++) {
       random = random * 6364136223846793005ULL + 1442695040888963407ULL;
-      for (size_t j = 0; j < columns; j++) {
-        step[j] += size * ((double) (random >> 40) / (double) (1 << 24) - 0.5)
-                   * core->null[j * core->freedom + k] * core->system->scale[j];
-      }
+      z[k] = size * ((double) (random >> 40) / (double) (1 << 24) - 0.5);
+    }
+    null_space_move (core->null, z, step);
+    for (size_t j = 0; j < columns; j++) {
+      step[j] *= core->system->scale[j];
     }
     part = 0.3 * longest (core, core->v, step, KEEP_FLOWS);
     for (size_t j = 0; j < columns; j++) {
@@ -235,7 +240,8 @@ core_bend (struct core *core, struct fault *fault)
   }
   core->v = roots[0];
   bent = system_bent (core->arena, core->system, core->v);
-  core->null = system_narrow (core->arena, core->system, core->v, &core->freedom);
+  core->null = system_narrow (core->arena, core->system, core->v);
+  core->freedom = core->null->freedom;
   independent = core->system->freedom - core->freedom;
   core->surplus += bent.count - independent;
   if (core->freedom > 0) {

@@ -4,6 +4,7 @@
 #include <math.h>
 #include <string.h>
 #include "balance/moves.h"
+#include "balance/null_space.h"
 #include "balance/program.h"
 #include "balance/reduce.h"
 #include "balance/solution.h"
@@ -44,14 +45,15 @@ static void
 wander (const struct core *core, unsigned long long seed, double v[])
 {
   double size = largest_flow (core, core->v);
-  memcpy (v, core->v, core->system->columns * sizeof *v);
+  double *z = ARENA_ARRAY (core->arena, core->freedom + 1, double);
+  double *w = ARENA_ARRAY (core->arena, core->system->columns + 1, double);
   for (size_t k = 0; k < core->freedom; k++) {
-    double step;
     seed = seed * 6364136223846793005ULL + 1442695040888963407ULL;
-    step = (size > 0 ? size : 1) * ((double) (seed >> 40) / (double) (1 << 24) - 0.5);
-    for (size_t j = 0; j < core->system->columns; j++) {
-      v[j] += step * core->null[j * core->freedom + k] * core->system->scale[j];
-    }
+    z[k] = (size > 0 ? size : 1) * ((double) (seed >> 40) / (double) (1 << 24) - 0.5);
+  }
+  null_space_move (core->null, z, w);
+  for (size_t j = 0; j < core->system->columns; j++) {
+    v[j] = core->v[j] + w[j] * core->system->scale[j];
   }
 }
 
@@ -69,7 +71,7 @@ core_generic (struct arena *arena, const struct core *core, size_t count)
     return v;
   }
   if (core->freedom > 0 && core->freedom * core->system->present <= few) {
-    program = program_make (arena, core->system, core->v, core->freedom, core->null);
+    program = program_make (arena, core->system, core->v, core->null, core->options->interrupted);
   }
   for (size_t s = 0; program && program_feasible (program) && s < network->streams; s++) {
     struct term *terms = ARENA_ARRAY (arena, network->components, struct term);

@@ -13,7 +13,7 @@
 #include "balance/system.h"
 #include "support/check.h"
 
-struct arena; struct fault; struct solve_options;
+struct arena; struct fault; struct null_space; struct solve_options;
 
 struct core {
   struct arena *arena;           /* where its work lives */
@@ -24,7 +24,7 @@ struct core {
   struct split *split;           /* by boundary */
   double *v;                     /* by column: a solution; where facts clash, the nearest */
   size_t freedom, surplus;       /* bends counted */
-  const double *null;            /* [column * freedom + k], in w */
+  const struct null_space *null; /* in w; `freedom` directions */
   bool agree;
   double p;                      /* of as large a disagreement within the digits typed */
   const double *sigma;           /* by fact row: standard deviation of its residual, scaled */

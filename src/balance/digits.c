@@ -2,6 +2,7 @@
 #include "balance/digits.h"
 
 #include <math.h>
+#include "balance/null_space.h"
 #include "balance/rank.h"
 #include "balance/reduce.h"
 #include "support/arena.h"
@@ -58,7 +59,8 @@ follow_bends (const struct digits *digits, struct arena *arena, double dv[])
     out[i] = -rows_residual (&digits->bent, i, dv) - digits->bent.right[i];
   }
   space_solve (arena, &digits->narrow, out, z);
-  moved = matrix_product (arena, system->columns, width, 1, system->null, z);
+  moved = ARENA_ARRAY (arena, system->columns + 1, double);
+  null_space_move (system->null, z, moved);
   for (size_t j = 0; j < system->columns; j++) {
     dv[j] += moved[j] * system->scale[j];
   }
@@ -167,7 +169,7 @@ digits_make (struct arena *arena, const struct core *core, const struct network 
     digits->bent = system_bent (arena, system, core->v);
     digits->narrow = space_make (arena, digits->bent.count, system->freedom,
                                  system_project (arena, system, &digits->bent, system->freedom,
-                                                 system->null));
+                                                 null_space_dense (arena, system->null)));
   }
   return digits;
 }

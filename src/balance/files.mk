@@ -13,6 +13,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/conflict.h \
   %D%/core.c \
   %D%/core.h \
+  %D%/dictionary.c \
+  %D%/dictionary.h \
   %D%/digits.c \
   %D%/digits.h \
   %D%/elimination.c \
@@ -38,6 +40,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/moves.h \
   %D%/network.c \
   %D%/network.h \
+  %D%/null_space.c \
+  %D%/null_space.h \
   %D%/program.c \
   %D%/program.h \
   %D%/rank.c \

@@ -3,6 +3,7 @@
 
 #include <math.h>
 #include <string.h>
+#include "balance/null_space.h"
 #include "balance/program.h"
 #include "balance/reduce.h"
 #include "support/arena.h"
@@ -28,13 +29,21 @@ struct work {
   bool feasible;
 };
 
+/* Has the user stopped it?  What is worked out then is forgotten.  */
+static bool
+is_stopped (const struct work *work)
+{
+  const struct solve_options *options = work->core->options;
+  return options->interrupted && options->interrupted ();
+}
+
 /* Adds FACTOR times the row of column J to G, and to the square SIZE of the gradient's norm.  */
 static void
 reach_add (const struct core *core, size_t j, double factor, double g[], double *size)
 {
   double a = core->system->absence.absent[j] ? 0 : factor * core->system->scale[j];
-  for (size_t k = 0; k < core->freedom; k++) {
-    g[k] += a * core->null[j * core->freedom + k];
+  if (fabs (a) > 0) {
+    null_space_add (core->null, j, a, g);
   }
   *size += a * a;
 }
@@ -96,8 +105,7 @@ classify_by_algebra (struct work *work)
   const struct core *core = work->core;
   double *g = ARENA_ARRAY (core->arena, core->freedom + 1, double);
   for (size_t j = 0; j < work->columns; j++) {
-    const double *row = &core->null[j * core->freedom];
-    work->fixed[j] = vector_norm (core->freedom, row) <= moves_not;
+    work->fixed[j] = core->freedom == 0 || null_space_reach (core->null, j) <= moves_not;
     work->value[j] = core->system->absence.absent[j] ? 0 : core->v[j];
     work->unit = j < work->flows ? fmax (work->unit, fabs (work->value[j])) : work->unit;
   }
@@ -124,7 +132,7 @@ find_ranges (struct work *work)
   struct term *terms = ARENA_ARRAY (work->core->arena, components, struct term);
   work->range = ARENA_ARRAY (work->keep, work->columns, struct range);
   work->total_range = ARENA_ARRAY (work->keep, work->network->streams, struct range);
-  for (size_t j = 0; j < work->columns; j++) {
+  for (size_t j = 0; j < work->columns && !is_stopped (work); j++) {
     work->range[j] = (struct range) { work->value[j], work->value[j] };
     if (!work->fixed[j]) {
       terms[0] = (struct term) { j, 1 };
@@ -132,7 +140,7 @@ find_ranges (struct work *work)
       work->fixed[j] = !has_width (work, &work->range[j]);
     }
   }
-  for (size_t s = 0; s < work->network->streams; s++) {
+  for (size_t s = 0; s < work->network->streams && !is_stopped (work); s++) {
     double total = system_total (work->core->system, work->value, s);
     work->total_range[s] = (struct range) { total, total };
     for (size_t c = 0; c < components; c++) {
@@ -204,20 +212,20 @@ find_negative (struct work *work, size_t *count)
   return negative;
 }
 
-/* Row by row echelon form of the null space's transpose, so that each vector moves few columns.
-   Complete pivots; rows are directions.                                                         */
+/* Row by row echelon form of the transpose of a block of the null space, so that each vector moves
+   few columns.  Complete pivots; rows are directions.                                           */
 static double *
-echelon (struct arena *arena, const struct work *work)
+echelon (struct arena *arena, const struct work *work, const struct null_block *block)
 {
-  size_t d = work->core->freedom, n = work->columns;
+  size_t d = block->directions, n = block->columns;
   double *a = ARENA_ARRAY (arena, d * n + 1, double);
   bool *used = ARENA_ARRAY (arena, n + 1, bool);
   for (size_t j = 0; j < n; j++) {
-    for (size_t k = 0; k < d && !work->fixed[j]; k++) {
-      a[k * n + j] = work->core->null[j * d + k];
+    for (size_t k = 0; k < d && !work->fixed[block->column[j]]; k++) {
+      a[k * n + j] = block->base[j * d + k];
     }
   }
-  for (size_t k = 0; k < d; k++) {
+  for (size_t k = 0; k < d && !is_stopped (work); k++) {
     size_t best = 0, row = k;
     double most = 0;
     for (size_t i = k; i < d; i++) {
@@ -257,28 +265,40 @@ leader (const size_t parent[], size_t j)
   return j;
 }
 
+/* Makes one group of the columns that a direction of the block moves.  */
+static void
+join_block (const struct work *work, const struct null_block *block, size_t parent[])
+{
+  struct arena *scratch = arena_create ();
+  const double *a = echelon (scratch, work, block);
+  for (size_t k = 0; k < block->directions; k++) {
+    size_t first = NOWHERE;
+    for (size_t i = 0; i < block->columns; i++) {
+      size_t j = block->column[i];
+      if (fabs (a[k * block->columns + i]) > moves_not && first == NOWHERE) {
+        first = leader (parent, j);
+      } else if (fabs (a[k * block->columns + i]) > moves_not) {
+        parent[leader (parent, j)] = first;
+      }
+    }
+  }
+  arena_destroy (scratch);
+}
+
 /* Columns that one direction moves are one group; groups are numbered from 1.  */
 static const size_t *
 find_groups (struct work *work)
 {
-  struct arena *arena = work->core->arena;
-  size_t d = work->core->freedom, n = work->columns, groups = 0;
-  size_t *group = ARENA_ARRAY (work->keep, n + 1, size_t), *parent, *number;
-  double *a = echelon (arena, work);
-  parent = ARENA_ARRAY (arena, n + 1, size_t);
-  number = ARENA_ARRAY (arena, n + 1, size_t);
+  const struct core *core = work->core;
+  size_t n = work->columns, groups = 0;
+  size_t *group = ARENA_ARRAY (work->keep, n + 1, size_t);
+  size_t *parent = ARENA_ARRAY (core->arena, n + 1, size_t);
+  size_t *number = ARENA_ARRAY (core->arena, n + 1, size_t);
   for (size_t j = 0; j < n; j++) {
     parent[j] = j;
   }
-  for (size_t k = 0; k < d; k++) {
-    size_t first = NOWHERE;
-    for (size_t j = 0; j < n; j++) {
-      if (fabs (a[k * n + j]) > moves_not && first == NOWHERE) {
-        first = leader (parent, j);
-      } else if (fabs (a[k * n + j]) > moves_not) {
-        parent[leader (parent, j)] = first;
-      }
-    }
+  for (size_t b = 0; core->freedom > 0 && b < core->null->blocks; b++) {
+    join_block (work, &core->null->block[b], parent);
   }
   for (size_t j = 0; j < n; j++) {
     size_t lead = leader (parent, j);
@@ -305,8 +325,8 @@ fixed_classify (struct arena *keep, const struct core *core, struct solution *so
   };
   classify_by_algebra (&work);
   if (core->freedom > 0) {
-    work.program = program_make (core->arena, core->system, core->v, core->system->freedom,
-                                 core->system->null);
+    work.program = program_make (core->arena, core->system, core->v, core->system->null,
+                                 core->options->interrupted);
     work.feasible = program_feasible (work.program);
     if (work.feasible) {
       find_ranges (&work);

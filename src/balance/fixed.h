@@ -12,7 +12,8 @@
 #include "balance/solution.h"
 
 /* Fills in value, fixed, fixed_total, fixed_fraction, fraction, scale_open, range, total_range,
-   group and negative of SOLUTION, in KEEP.                                                      */
+   group and negative of SOLUTION, in KEEP.  Interrupted it comes back early, with nothing to be
+   used.                                                                                         */
 void fixed_classify (struct arena *keep, const struct core *, struct solution *);
 
 /* G = gradient of a quantity at V in the null space (`freedom` doubles); the norm of the gradient

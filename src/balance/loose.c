@@ -5,6 +5,7 @@
 #include <math.h>
 #include <string.h>
 #include "balance/digits.h"
+#include "balance/null_space.h"
 #include "balance/rank.h"
 #include "balance/suggest.h"
 #include "support/arena.h"
@@ -385,7 +386,7 @@ loosened (struct work *work, size_t count, const size_t chosen[])
     }
   }
   core.freedom = columns_orthonormal (columns, count, count, null, 0, NULL);
-  core.null = null;
+  core.null = null_space_of (work->arena, columns, core.freedom, count, null);
   return core;
 }
 

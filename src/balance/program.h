@@ -3,7 +3,8 @@
    All solutions are v = v0 + scale * (null z).  Those whose component flows are at least zero are
    walked over with a dictionary: as many flows as there are directions stand for the directions,
    the others are written in them (Dantzig's simplex method; Chvatal, Linear Programming, 1983,
-   chapters 2, 3 and 8).  Extents have no sign.                                                  */
+   chapters 2, 3 and 8).  Extents have no sign.  Blocks of the null space know nothing of each
+   other, so each has a dictionary of its own.                                                   */
 #ifndef BALANCE_PROGRAM_H
 #define BALANCE_PROGRAM_H
 
@@ -13,11 +14,12 @@
 #include "balance/solution.h"
 #include "balance/system.h"
 
-struct arena; struct program;
+struct arena; struct null_space; struct program;
 
-/* From a solution V and the null space.  It lives in the arena.  */
+/* From a solution V and the null space.  It lives in the arena.  INTERRUPTED (or null) once true
+   stays so, and all searches end early, with nothing to be used.                                */
 struct program *program_make (struct arena *, const struct system *, const double v[],
-                              size_t freedom, const double null[]);
+                              const struct null_space *, bool (*interrupted) (void));
 /* Is there any solution without a negative flow?  If not, `program_point` is the one whose most
    negative flow is least so.                                                                    */
 bool program_feasible (const struct program *);

@@ -4,6 +4,7 @@
 #include <math.h>
 #include <string.h>
 #include "balance/elimination.h"
+#include "balance/null_space.h"
 #include "balance/rank.h"
 #include "support/arena.h"
 
@@ -118,18 +119,24 @@ system_left_mixed (struct arena *arena, const struct system *system, size_t coun
 /* Takes the null space out of W, by column of the rows: of all solutions the shortest.  One with
    nothing in the columns that are free may be far off, and lose digits.                         */
 static void
-shorten (const struct system *system, double w[])
+shorten (const struct system *system, struct arena *arena, double w[])
 {
   const struct reduction *r = system->reduction;
-  size_t d = system->freedom;
-  for (size_t k = 0; k < d && system->null; k++) {
-    double along = 0;
-    for (size_t j = 0; j < r->a.columns; j++) {
-      along += system->null[r->column[j] * d + k] * w[j];
-    }
-    for (size_t j = 0; j < r->a.columns; j++) {
-      w[j] -= along * system->null[r->column[j] * d + k];
-    }
+  if (!system->null || system->freedom == 0) {
+    return;
+  }
+  double *v = ARENA_ARRAY (arena, system->columns + 1, double);
+  double *along = ARENA_ARRAY (arena, system->freedom + 1, double);
+  for (size_t j = 0; j < r->a.columns; j++) {
+    v[r->column[j]] = w[j];
+  }
+  null_space_along (system->null, v, along);
+  for (size_t k = 0; k < system->freedom; k++) {
+    along[k] = -along[k];
+  }
+  null_space_move (system->null, along, v);
+  for (size_t j = 0; j < r->a.columns; j++) {
+    w[j] = v[r->column[j]];
   }
 }
 
@@ -153,7 +160,7 @@ system_solve (const struct system *system, const double right[], double v[])
     for (size_t j = 0; j < r->a.columns; j++) {
       w[j] += step[j];
     }
-    shorten (system, w);
+    shorten (system, arena, w);
   }
   memset (v, 0, system->columns * sizeof *v);
   for (size_t j = 0; j < r->a.columns; j++) {
@@ -176,7 +183,7 @@ system_correct (const struct system *system, const double at[], double v[])
     }
   }
   elimination_solve (r->elimination, out, step);
-  shorten (system, step);
+  shorten (system, arena, step);
   for (size_t j = 0; j < r->a.columns; j++) {
     v[r->column[j]] -= step[j] * system->scale[r->column[j]];
   }
@@ -198,22 +205,46 @@ find_particular (struct arena *arena, struct system *system)
   system->particular = v;
 }
 
+/* The null vectors of the rows, by column of the network.  */
+static struct null_vectors
+null_vectors (struct arena *arena, const struct system *system)
+{
+  const struct reduction *r = system->reduction;
+  size_t n = r->a.columns, d = system->freedom, count = 0, room = 4 * n + 64;
+  size_t *start = ARENA_ARRAY (arena, d + 1, size_t), *column = NULL;
+  double *x = ARENA_ARRAY (arena, n + 1, double), *value = NULL;
+  column = ARENA_ARRAY (arena, room, size_t);
+  value = ARENA_ARRAY (arena, room, double);
+  for (size_t k = 0; k < d; k++) {
+    if (count + n > room) {
+      size_t *more = ARENA_ARRAY (arena, 2 * room, size_t);
+      double *values = ARENA_ARRAY (arena, 2 * room, double);
+      memcpy (more, column, count * sizeof *more);
+      memcpy (values, value, count * sizeof *values);
+      column = more;
+      value = values;
+      room *= 2;
+    }
+    elimination_null (r->elimination, k, x);
+    for (size_t j = 0; j < n; j++) {
+      if (fabs (x[j]) > 0) {
+        column[count] = r->column[j];
+        value[count++] = x[j];
+      }
+    }
+    start[k + 1] = count;
+  }
+  return (struct null_vectors) { d, start, column, value };
+}
+
 void
 system_open (struct arena *arena, struct system *system)
 {
-  const struct reduction *r = system->reduction;
-  size_t n = r->a.columns, d = system->freedom;
-  double *x = ARENA_ARRAY (arena, n + 1, double);
-  double *null = ARENA_ARRAY (arena, system->columns * d + 1, double);
-  for (size_t k = 0; k < d; k++) {
-    elimination_null (r->elimination, k, x);
-    for (size_t j = 0; j < n; j++) {
-      null[r->column[j] * d + k] = x[j];
-    }
-  }
-  columns_orthonormal (system->columns, d, d, null, 0, NULL);
-  system->null = null;
-  if (d > 0) {
+  struct arena *scratch = arena_create ();
+  struct null_vectors vectors = null_vectors (scratch, system);
+  system->null = null_space_make (arena, system->columns, &vectors);
+  arena_destroy (scratch);
+  if (system->freedom > 0) {
     find_particular (arena, system);
   }
 }
@@ -285,20 +316,24 @@ system_project (struct arena *arena, const struct system *system, const struct r
   return out;
 }
 
-const double *
-system_narrow (struct arena *arena, const struct system *system, const double v[],
-               size_t *freedom)
+struct null_space *
+system_narrow (struct arena *arena, const struct system *system, const double v[])
 {
-  struct rows bent = system_bent (arena, system, v);
-  size_t width = system->freedom;
-  double *h = system_project (arena, system, &bent, width, system->null), *inner;
-  struct space space = space_make (arena, bent.count, width, h);
-  *freedom = width - space.rank;
-  inner = ARENA_ARRAY (arena, width * *freedom + 1, double);
+  struct arena *work = arena_create ();
+  struct rows bent = system_bent (work, system, v);
+  size_t width = system->freedom, freedom;
+  double *null = null_space_dense (work, system->null), *inner;
+  double *h = system_project (work, system, &bent, width, null);
+  struct space space = space_make (work, bent.count, width, h);
+  freedom = width - space.rank;
+  inner = ARENA_ARRAY (work, width * freedom + 1, double);
   for (size_t j = 0; j < width; j++) {
-    for (size_t k = 0; k < *freedom; k++) {
-      inner[j * *freedom + k] = space_null (&space, j, k);
+    for (size_t k = 0; k < freedom; k++) {
+      inner[j * freedom + k] = space_null (&space, j, k);
     }
   }
-  return matrix_product (arena, system->columns, width, *freedom, system->null, inner);
+  null = matrix_product (work, system->columns, width, freedom, null, inner);
+  struct null_space *narrow = null_space_of (arena, system->columns, freedom, freedom, null);
+  arena_destroy (work);
+  return narrow;
 }

@@ -35,9 +35,7 @@ void system_clash (const struct system *, const double v[], double rho[]);
 /* ROWS times scale times BASE (columns x WIDTH): what a step along each vector of BASE changes.  */
 double *system_project (struct arena *, const struct system *, const struct rows *, size_t width,
                         const double base[]);
-/* The null space within the null space of SYSTEM which the bends leave at V: [column * *freedom +
-   k] as in the system.  */
-const double *system_narrow (struct arena *, const struct system *, const double v[],
-                             size_t *freedom);
+/* The null space within the null space of SYSTEM which the bends leave at V.  */
+struct null_space *system_narrow (struct arena *, const struct system *, const double v[]);
 
 #endif

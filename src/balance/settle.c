@@ -4,6 +4,7 @@
 #include <math.h>
 #include <string.h>
 #include "balance/conflict.h"
+#include "balance/null_space.h"
 #include "balance/solution.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -75,11 +76,8 @@ idle_stream (const struct core *core, size_t from)
   }
   for (size_t s = from; s < network->streams; s++) {
     double size = 0;
-    for (size_t j = s * components * core->freedom; j < (s + 1) * components * core->freedom;
-         j++) {
-      size = fmax (size, fabs (core->null[j]));
-    }
     for (size_t j = s * components; j < (s + 1) * components; j++) {
+      size = fmax (size, null_space_reach (core->null, j));
       size = fmax (size, largest > 0 ? fabs (core->v[j]) / largest : 0);
     }
     if (system_parts (core->system, s) > 0 && size <= no_flow) {

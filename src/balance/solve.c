@@ -179,6 +179,9 @@ answer (struct arena *keep, const struct core *core, const struct network *typed
   solution->count = count_up (core);
   solution->chi2 = solution->critical = solution->p = solution->z_critical = (double) NAN;
   fixed_classify (keep, core, solution);
+  if (!core_goes_on (core->options, fault)) {
+    return NULL;
+  }
   find_redundant (keep, core, solution);
   copy_roots (keep, core, solution);
   solution->mismatch = mismatch (core, solution->value);

@@ -2,8 +2,10 @@
 #include "balance/suggest.h"
 
 #include <math.h>
+#include <stdlib.h>
 #include <string.h>
 #include "balance/fixed.h"
+#include "balance/null_space.h"
 #include "balance/rank.h"
 #include "support/arena.h"
 #include "support/vector.h"
@@ -15,13 +17,28 @@ static const double clearly = 1.01;
 /* Part of a gradient that is rounding.  */
 static const double nothing = 1e-14;
 
+/* Of a gradient in the null space all but its part is nothing.  */
 struct candidate {
   struct quantity quantity;
+  struct part *part;
   double *g;                     /* gradient in the null space over its norm; in time what of it
                                     the chosen ones do not cover */
-  double *along;                 /* what they cover, by chosen one */
+  double *along;                 /* what they cover, by chosen one of its part */
   double length;                 /* of g */
   double worth;
+};
+
+/* Blocks of the null space that hang together by their streams.  */
+struct part {
+  size_t width;                  /* directions */
+  size_t count, room, *candidate;
+  size_t chosen, *choice;        /* candidates, in the order they were chosen, */
+  double *length;                /* and what was left of each then */
+  size_t *group;                 /* their numbers in the whole set */
+  size_t taken;                  /* of the chosen: already in the whole set */
+  size_t free_count, *free;      /* totals the others of the part are written in */
+  double **basis, **factor;      /* their gradients at unit length and square to each other; by free
+                                    total what makes it of these */
 };
 
 struct work {
@@ -29,26 +46,124 @@ struct work {
   const struct core *core;
   const struct network *network;
   const struct solution *solution;
-  size_t width, count;
+  size_t width, count, chosen;
   struct candidate *candidates;
-  size_t chosen, *choice;        /* the set */
+  double *g;                     /* room for a gradient */
+  size_t parts;
+  struct part *part;
+  size_t *part_of, *place;       /* by block: its part, its first direction there */
 };
+
+static bool
+is_stopped (const struct work *work)
+{
+  const struct solve_options *options = work->core->options;
+  return options->interrupted && options->interrupted ();
+}
+
+/* ---- Parts ---- */
+
+static size_t
+leader (size_t parent[], size_t b)
+{
+  while (parent[b] != b) {
+    b = parent[b] = parent[parent[b]];
+  }
+  return b;
+}
+
+/* Puts the blocks that move stream S together, and with block B if it is one; any of them.  */
+static size_t
+join_stream (const struct work *work, size_t s, size_t b, size_t parent[])
+{
+  size_t components = work->network->components;
+  for (size_t j = s * components; j < (s + 1) * components; j++) {
+    size_t of = work->core->null->of[j];
+    if (of != NOWHERE && b != NOWHERE) {
+      size_t x = leader (parent, of), y = leader (parent, b);
+      parent[x > y ? x : y] = x > y ? y : x;
+    }
+    b = of != NOWHERE ? of : b;
+  }
+  return b;
+}
+
+static void
+find_parts (struct work *work)
+{
+  const struct null_space *null = work->core->null;
+  const struct system *system = work->core->system;
+  size_t *parent = ARENA_ARRAY (work->arena, null->blocks + 1, size_t);
+  for (size_t b = 0; b < null->blocks; b++) {
+    parent[b] = b;
+  }
+  for (size_t s = 0; s < work->network->streams; s++) {
+    (void) join_stream (work, s, NOWHERE, parent);
+  }
+  for (size_t i = 0; i < system->bends; i++) {
+    size_t b = join_stream (work, system->bend[i].inlet, NOWHERE, parent);
+    (void) join_stream (work, system->bend[i].outlet, b, parent);
+  }
+  work->part = ARENA_ARRAY (work->arena, null->blocks + 1, struct part);
+  work->part_of = ARENA_ARRAY (work->arena, null->blocks + 1, size_t);
+  work->place = ARENA_ARRAY (work->arena, null->blocks + 1, size_t);
+  for (size_t b = 0; b < null->blocks; b++) {
+    size_t lead = leader (parent, b);
+    work->part_of[b] = lead == b ? work->parts++ : work->part_of[lead];
+    work->place[b] = work->part[work->part_of[b]].width;
+    work->part[work->part_of[b]].width += null->block[b].directions;
+  }
+}
+
+/* The part of work->g that is something, copied; null: nothing is.  */
+static double *
+take_part (struct work *work, struct part **part)
+{
+  const struct null_space *null = work->core->null;
+  double *g = NULL;
+  for (size_t b = 0; b < null->blocks; b++) {
+    const double *from = &work->g[null->block[b].first];
+    size_t count = null->block[b].directions;
+    if (vector_norm (count, from) > 0) {
+      *part = &work->part[work->part_of[b]];
+      g = g ? g : ARENA_ARRAY (work->arena, (*part)->width + 1, double);
+      memcpy (&g[work->place[b]], from, count * sizeof *g);
+    }
+  }
+  return g;
+}
+
+/* ---- Candidates ---- */
+
+static void
+add_to_part (struct work *work, struct part *part, size_t candidate)
+{
+  if (part->count == part->room) {
+    size_t *more = ARENA_ARRAY (work->arena, 2 * part->room + 8, size_t);
+    if (part->count > 0) {
+      memcpy (more, part->candidate, part->count * sizeof *more);
+    }
+    part->candidate = more;
+    part->room = 2 * part->room + 8;
+  }
+  part->candidate[part->count++] = candidate;
+}
 
 static void
 consider (struct work *work, struct quantity quantity)
 {
-  struct candidate *candidate = &work->candidates[work->count];
-  double *g = ARENA_ARRAY (work->arena, work->width, double);
-  double size = quantity_reach (work->core, &quantity, work->solution->value, g);
-  double worth = size > 0 ? vector_norm (work->width, g) / size : 0;
+  double size = quantity_reach (work->core, &quantity, work->solution->value, work->g);
+  double worth = size > 0 ? vector_norm (work->width, work->g) / size : 0;
   if (worth > moves_not) {
-    for (size_t k = 0; k < work->width; k++) {
+    struct part *part;
+    double *g = take_part (work, &part);
+    for (size_t k = 0; k < part->width; k++) {
       g[k] /= size;
     }
-    *candidate = (struct candidate) { quantity, g, NULL, 1, worth };
-    candidate->length = vector_norm (work->width, g);
-    candidate->along = ARENA_ARRAY (work->arena, work->width + 1, double);
-    work->count++;
+    struct candidate candidate = { quantity, part, g, NULL, vector_norm (part->width, g), worth };
+    candidate.along = ARENA_ARRAY (work->arena, part->width + 1, double);
+    add_to_part (work, part, work->count);
+    work->candidates[work->count++] = candidate;
   }
 }
 
@@ -86,37 +201,39 @@ find_candidates (struct work *work)
   }
 }
 
+/* ---- The set ---- */
+
 /* Takes what BEST covers out of all that is left of the gradients.  */
 static void
-clear (struct work *work, size_t m, const double best[])
+clear (struct work *work, const struct part *part, size_t m, const double best[])
 {
-  for (size_t i = 0; i < work->count; i++) {
-    struct candidate *candidate = &work->candidates[i];
-    double along = vector_dot (work->width, best, candidate->g);
+  for (size_t i = 0; i < part->count; i++) {
+    struct candidate *candidate = &work->candidates[part->candidate[i]];
+    double along = vector_dot (part->width, best, candidate->g);
     if (fabs (along) > nothing) {
       candidate->along[m] = along;
-      for (size_t k = 0; k < work->width; k++) {
+      for (size_t k = 0; k < part->width; k++) {
         candidate->g[k] -= along * best[k];
       }
-      candidate->length = vector_norm (work->width, candidate->g);
+      candidate->length = vector_norm (part->width, candidate->g);
     }
   }
 }
 
-/* The candidate that stands out most, of the first kind that has any.  */
+/* Of COUNT candidates, in LIST, the one that stands out most, of the first kind that has any;
+   LENGTH is what is left of each.  Its place in the list, or NOWHERE.  */
 static size_t
-next_choice (const struct work *work)
+next_choice (const struct work *work, size_t count, const size_t list[], const double length[])
 {
   size_t found = NOWHERE;
   double most = 1e-6;
-  for (size_t i = 0; i < work->count; i++) {
-    const struct candidate *candidate = &work->candidates[i];
-    if (found != NOWHERE
-        && candidate->quantity.kind != work->candidates[found].quantity.kind) {
+  for (size_t i = 0; i < count; i++) {
+    enum quantity_kind kind = work->candidates[list[i]].quantity.kind;
+    if (found != NOWHERE && kind != work->candidates[list[found]].quantity.kind) {
       break;
     }
-    if (candidate->length > most * (found == NOWHERE ? 1 : clearly)) {
-      most = candidate->length;
+    if (length[i] > most * (found == NOWHERE ? 1 : clearly)) {
+      most = length[i];
       found = i;
     }
   }
@@ -128,10 +245,11 @@ next_choice (const struct work *work)
 static double *
 direction (const struct work *work, size_t found, double *const chosen[])
 {
-  size_t width = work->width;
+  const struct part *part = work->candidates[found].part;
+  size_t width = part->width;
   double *best = ARENA_ARRAY (work->arena, width, double), length;
   memcpy (best, work->candidates[found].g, width * sizeof *best);
-  for (size_t m = 0; m < work->chosen; m++) {
+  for (size_t m = 0; m < part->chosen; m++) {
     double along = vector_dot (width, chosen[m], best);
     for (size_t k = 0; k < width; k++) {
       best[k] -= along * chosen[m][k];
@@ -146,33 +264,78 @@ direction (const struct work *work, size_t found, double *const chosen[])
 
 /* False: interrupted.  */
 static bool
-choose (struct work *work)
+choose_in (struct work *work, struct part *part)
 {
-  double **chosen = ARENA_ARRAY (work->arena, work->width + 1, double *);
-  work->choice = ARENA_ARRAY (work->arena, work->width + 1, size_t);
-  while (work->chosen < work->width) {
-    size_t found = next_choice (work);
-    if (found == NOWHERE) {
+  double **chosen = ARENA_ARRAY (work->arena, part->width + 1, double *);
+  double *length = ARENA_ARRAY (work->arena, part->count + 1, double);
+  part->choice = ARENA_ARRAY (work->arena, part->width + 1, size_t);
+  part->length = ARENA_ARRAY (work->arena, part->width + 1, double);
+  part->group = ARENA_ARRAY (work->arena, part->width + 1, size_t);
+  while (part->chosen < part->width) {
+    for (size_t i = 0; i < part->count; i++) {
+      length[i] = work->candidates[part->candidate[i]].length;
+    }
+    size_t at = next_choice (work, part->count, part->candidate, length);
+    if (at == NOWHERE) {
       break;
     }
-    if (work->core->options->interrupted && work->core->options->interrupted ()) {
+    if (is_stopped (work)) {
       return false;
     }
-    chosen[work->chosen] = direction (work, found, chosen);
-    clear (work, work->chosen, chosen[work->chosen]);
-    work->choice[work->chosen++] = found;
+    size_t found = part->candidate[at];
+    part->length[part->chosen] = length[at];
+    chosen[part->chosen] = direction (work, found, chosen);
+    clear (work, part, part->chosen, chosen[part->chosen]);
+    part->choice[part->chosen++] = found;
   }
   return true;
 }
 
-/* Candidate = sum of share[m] times chosen m: the gradient of a chosen one lies along those chosen
-   before it and its own.                                                                        */
+static int
+by_candidate (const void *a, const void *b)
+{
+  const struct part *const *left = a, *const *right = b;
+  size_t x = (*left)->choice[(*left)->taken], y = (*right)->choice[(*right)->taken];
+  return (x > y) - (x < y);
+}
+
+/* Numbers the chosen ones of all parts as they would have been chosen from all candidates at once:
+   what stands out most first.  Parts whose next is the same kind and no longer wait their turn.  */
+static void
+number_choices (struct work *work)
+{
+  struct part **open = ARENA_ARRAY (work->arena, work->parts + 1, struct part *);
+  size_t *next = ARENA_ARRAY (work->arena, work->parts + 1, size_t);
+  double *length = ARENA_ARRAY (work->arena, work->parts + 1, double);
+  for (;;) {
+    size_t count = 0, found;
+    for (size_t p = 0; p < work->parts; p++) {
+      if (work->part[p].taken < work->part[p].chosen) {
+        open[count++] = &work->part[p];
+      }
+    }
+    qsort (open, count, sizeof *open, by_candidate);
+    for (size_t i = 0; i < count; i++) {
+      next[i] = open[i]->choice[open[i]->taken];
+      length[i] = open[i]->length[open[i]->taken];
+    }
+    found = next_choice (work, count, next, length);
+    if (found == NOWHERE) {
+      return;
+    }
+    open[found]->group[open[found]->taken++] = work->chosen++;
+  }
+}
+
+/* Candidate = sum of share[m] times chosen m of its part: the gradient of a chosen one lies along
+   those chosen before it and its own.                                                           */
 static void
 find_share (const struct work *work, const struct candidate *candidate, double share[])
 {
-  memcpy (share, candidate->along, work->chosen * sizeof *share);
-  for (size_t m = work->chosen; m-- > 0;) {
-    const double *along = work->candidates[work->choice[m]].along;
+  const struct part *part = candidate->part;
+  memcpy (share, candidate->along, part->chosen * sizeof *share);
+  for (size_t m = part->chosen; m-- > 0;) {
+    const double *along = work->candidates[part->choice[m]].along;
     share[m] /= along[m];
     for (size_t k = 0; k < m && fabs (share[m]) > nothing; k++) {
       share[k] -= along[k] * share[m];
@@ -191,37 +354,48 @@ may_stand_for (const struct candidate *candidate, const struct candidate *chosen
              || candidate->quantity.kind == chosen->quantity.kind);
 }
 
+/* What each chosen one could be exchanged for.  AT, by chosen one: first how many, then, if there
+   is a LIST, where the next of them goes.  */
+static void
+list_exchanges (struct work *work, size_t at[], struct suggestion list[])
+{
+  double *share = ARENA_ARRAY (work->arena, work->width + 1, double);
+  for (size_t i = 0; i < work->count; i++) {
+    const struct candidate *c = &work->candidates[i];
+    find_share (work, c, share);
+    for (size_t m = 0; m < c->part->chosen; m++) {
+      size_t group = c->part->group[m];
+      if (fabs (share[m]) > 1e-6
+          && may_stand_for (c, &work->candidates[c->part->choice[m]])) {
+        if (list) {
+          list[at[group]] = (struct suggestion) { c->quantity, c->worth, group };
+        }
+        at[group]++;
+      }
+    }
+  }
+}
+
 /* The chosen ones, then by chosen one what it could be exchanged for.  */
 static void
 list_set (struct work *work, struct solution *solution)
 {
-  size_t n = work->chosen, count = n;
-  bool *stands = ARENA_ARRAY (work->arena, n * work->count + 1, bool);
-  double *share = ARENA_ARRAY (work->arena, n + 1, double);
-  struct suggestion *list;
-  for (size_t i = 0; i < work->count; i++) {
-    find_share (work, &work->candidates[i], share);
-    for (size_t m = 0; m < n; m++) {
-      stands[m * work->count + i]
-        = fabs (share[m]) > 1e-6
-          && may_stand_for (&work->candidates[i], &work->candidates[work->choice[m]]);
-      count += stands[m * work->count + i] ? 1 : 0;
+  size_t n = work->chosen, count = n, *at = ARENA_ARRAY (work->arena, n + 1, size_t);
+  list_exchanges (work, at, NULL);
+  for (size_t m = 0; m < n; m++) {
+    size_t first = count;
+    count += at[m];
+    at[m] = first;
+  }
+  struct suggestion *list = ARENA_ARRAY (work->keep, count + 1, struct suggestion);
+  for (size_t p = 0; p < work->parts; p++) {
+    const struct part *part = &work->part[p];
+    for (size_t m = 0; m < part->chosen; m++) {
+      const struct candidate *c = &work->candidates[part->choice[m]];
+      list[part->group[m]] = (struct suggestion) { c->quantity, c->worth, part->group[m] };
     }
   }
-  list = ARENA_ARRAY (work->keep, count + 1, struct suggestion);
-  count = 0;
-  for (size_t m = 0; m < n; m++) {
-    const struct candidate *c = &work->candidates[work->choice[m]];
-    list[count++] = (struct suggestion) { c->quantity, c->worth, m };
-  }
-  for (size_t m = 0; m < n; m++) {
-    for (size_t i = 0; i < work->count; i++) {
-      if (stands[m * work->count + i]) {
-        const struct candidate *c = &work->candidates[i];
-        list[count++] = (struct suggestion) { c->quantity, c->worth, m };
-      }
-    }
-  }
+  list_exchanges (work, at, list);
   solution->suggestions = list;
   solution->suggestion_count = count;
 }
@@ -275,43 +449,75 @@ find_useless (struct work *work, struct solution *solution)
   solution->useless_count = count;
 }
 
+/* ---- What ties open totals ---- */
+
+/* Takes out of G what the free totals of the part cover: ALONG.  What is left of it.  */
+static double
+take_out (const struct part *part, double g[], double along[])
+{
+  memset (along, 0, (part->free_count + 1) * sizeof *along);
+  for (int twice = 0; twice < 2; twice++) {
+    for (size_t m = 0; m < part->free_count; m++) {
+      double by = vector_dot (part->width, part->basis[m], g);
+      along[m] += by;
+      for (size_t k = 0; k < part->width && fabs (by) > 0; k++) {
+        g[k] -= by * part->basis[m][k];
+      }
+    }
+  }
+  return vector_norm (part->width, g);
+}
+
+/* The total of S becomes one in which others are written: G is what is left of its gradient.  */
+static void
+set_free (struct part *part, size_t s, double g[], double left, double along[])
+{
+  size_t m = part->free_count++;
+  for (size_t k = 0; k < part->width; k++) {
+    g[k] /= left;
+  }
+  along[m] = left;
+  part->free[m] = s;
+  part->basis[m] = g;
+  part->factor[m] = along;
+}
+
 /* Writes the total of S in the free ones; false: it is one of them.  */
 static bool
-relate (struct work *work, size_t s, size_t free_count, const size_t free[],
-        struct relation_left *left)
+relate (struct work *work, size_t s, struct relation_left *left)
 {
-  struct arena *arena = work->arena;
   const struct core *core = work->core;
-  double *a = ARENA_ARRAY (arena, work->width * free_count + 1, double);
-  double *g = ARENA_ARRAY (arena, work->width + 1, double);
-  double *factor = ARENA_ARRAY (arena, free_count + 1, double), size, out = 0;
-  double *kept = ARENA_ARRAY (work->keep, free_count + 1, double);
-  size_t *which = ARENA_ARRAY (work->keep, free_count + 1, size_t);
-  struct space space;
-  for (size_t i = 0; i < free_count; i++) {
-    struct quantity total = { QUANTITY_TOTAL, free[i], 0 };
-    (void) quantity_reach (core, &total, core->v, g);
-    for (size_t k = 0; k < work->width; k++) {
-      a[k * free_count + i] = g[k];
-    }
+  struct quantity total = { QUANTITY_TOTAL, s, 0 };
+  double size = quantity_reach (core, &total, core->v, work->g);
+  struct part *part = NULL;
+  double *g = take_part (work, &part);
+  *left = (struct relation_left) { s, system_total (core->system, core->v, s), 0, NULL, NULL };
+  if (!g) {
+    return true;
   }
-  size = quantity_reach (core, &(struct quantity) { QUANTITY_TOTAL, s, 0 }, core->v, g);
-  space = space_make (arena, work->width, free_count, a);
-  space_solve (arena, &space, g, factor);
-  for (size_t k = 0; k < work->width; k++) {
-    out = fmax (out, fabs (g[k] - vector_dot (free_count, &a[k * free_count], factor)));
-  }
+  double *along = ARENA_ARRAY (work->arena, part->free_count + 1, double);
+  double out = take_out (part, g, along);
   if (out > moves_not * size) {
+    set_free (part, s, g, out, along);
     return false;
   }
-  *left = (struct relation_left) { s, system_total (core->system, core->v, s), 0, which, kept };
-  for (size_t i = 0; i < free_count; i++) {
-    if (fabs (factor[i]) > moves_not) {
-      left->constant -= factor[i] * system_total (core->system, core->v, free[i]);
-      which[left->count] = free[i];
-      kept[left->count++] = factor[i];
+  double *kept = ARENA_ARRAY (work->keep, part->free_count + 1, double);
+  size_t *which = ARENA_ARRAY (work->keep, part->free_count + 1, size_t);
+  for (size_t m = part->free_count; m-- > 0;) {
+    along[m] /= part->factor[m][m];
+    for (size_t k = 0; k < m && fabs (along[m]) > 0; k++) {
+      along[k] -= along[m] * part->factor[m][k];
     }
   }
+  for (size_t m = 0; m < part->free_count; m++) {
+    if (fabs (along[m]) > moves_not) {
+      left->constant -= along[m] * system_total (core->system, core->v, part->free[m]);
+      which[left->count] = part->free[m];
+      kept[left->count++] = along[m];
+    }
+  }
+  left->free = which;
+  left->factor = kept;
   return true;
 }
 
@@ -319,16 +525,17 @@ relate (struct work *work, size_t s, size_t free_count, const size_t free[],
 static void
 find_left (struct work *work, struct solution *solution)
 {
-  size_t streams = work->network->streams, free_count = 0, count = 0;
-  size_t *free = ARENA_ARRAY (work->arena, streams + 1, size_t);
+  size_t streams = work->network->streams, count = 0;
   struct relation_left *left = ARENA_ARRAY (work->keep, streams + 1, struct relation_left);
-  for (size_t s = 0; s < streams; s++) {
+  for (size_t p = 0; p < work->parts; p++) {
+    struct part *part = &work->part[p];
+    part->free = ARENA_ARRAY (work->arena, part->width + 1, size_t);
+    part->basis = ARENA_ARRAY (work->arena, part->width + 1, double *);
+    part->factor = ARENA_ARRAY (work->arena, part->width + 1, double *);
+  }
+  for (size_t s = 0; s < streams && !is_stopped (work); s++) {
     if (!solution->fixed_total[s]) {
-      if (relate (work, s, free_count, free, &left[count])) {
-        count++;
-      } else {
-        free[free_count++] = s;
-      }
+      count += relate (work, s, &left[count]) ? 1 : 0;
     }
   }
   solution->left = left;
@@ -341,13 +548,19 @@ suggest (struct arena *keep, const struct core *core, struct solution *solution)
   struct work work = { .keep = keep, .arena = core->arena, .core = core,
                        .network = core->network, .solution = solution,
                        .width = core->freedom };
-  if (core->freedom > 0) {
-    find_candidates (&work);
-    if (!choose (&work)) {
+  if (core->freedom == 0) {
+    return;
+  }
+  work.g = ARENA_ARRAY (core->arena, core->freedom + 1, double);
+  find_parts (&work);
+  find_candidates (&work);
+  for (size_t p = 0; p < work.parts; p++) {
+    if (!choose_in (&work, &work.part[p])) {
       return;
     }
-    list_set (&work, solution);
-    find_useless (&work, solution);
-    find_left (&work, solution);
   }
+  number_choices (&work);
+  list_set (&work, solution);
+  find_useless (&work, solution);
+  find_left (&work, solution);
 }

@@ -16,7 +16,7 @@
 #include "balance/absent.h"
 #include "balance/network.h"
 
-struct arena; struct reduction;
+struct arena; struct null_space; struct reduction;
 
 enum row_kind { ROW_BALANCE, ROW_SPLIT, ROW_FACT };
 /* Whose row it is: of boundary or fact `of`.  COMPONENT is NOWHERE where it has none.  */
@@ -65,8 +65,7 @@ struct system {
   /* Filled in by `system_reduce` (reduce.h), with bends not yet counted.  W are the scaled unknowns
      and facts are the rows from `structure` on, scaled.                                         */
   size_t rank, freedom, surplus;
-  const double *null;            /* [column * freedom + k], orthonormal in w; absent columns 0; null
-                                    until `system_open` */
+  const struct null_space *null; /* orthonormal in w; null until `system_open` */
   const double *particular;      /* by column, in v: least squares where the facts clash */
   const double *left;            /* [fact row * surplus + k]: multipliers of facts which some of the
                                     structure's take to nothing, orthonormal; null until

@@ -124,24 +124,21 @@ verdict_sets (struct verdict_maker *m, size_t suggestion_count,
     groups = suggestions[i].group >= groups ? suggestions[i].group + 1 : groups;
   }
   struct verdict_texts *sets = ARENA_ARRAY (m->arena, groups, struct verdict_texts);
+  struct text_list *lists = ARENA_ARRAY (m->arena, groups, struct text_list);
+  for (size_t i = 0; i < suggestion_count; i++) {
+    text_list_add (m->arena, &lists[suggestions[i].group],
+                   quantity_text (m, &suggestions[i].quantity));
+  }
   *count = 0;
   for (size_t g = 0; g < groups; g++) {
-    struct text_list list = { .at = NULL };
-    for (size_t i = 0; i < suggestion_count; i++)
-      if (suggestions[i].group == g) {
-        text_list_add (m->arena, &list, quantity_text (m, &suggestions[i].quantity));
-      }
-    if (list.count > 0) {
-      sets[(*count)++] = text_list_done (&list);
+    if (lists[g].count > 0) {
+      lists[*count] = lists[g];
+      sets[(*count)++] = text_list_done (&lists[g]);
     }
   }
   for (size_t g = 0; g < *count; g++) {
-    struct text_list list = { .at = NULL };
-    for (size_t i = 0; i < sets[g].count; i++) {
-      text_list_add (m->arena, &list, sets[g].at[i]);
-    }
     verdict_fact (m, g > 0 ? "and one of" : *count == 1 ? alone : "one of",
-                  text_list_joined (m->arena, &list));
+                  text_list_joined (m->arena, &lists[g]));
   }
   return sets;
 }

@@ -49,6 +49,10 @@ suites += %D%/t_network
 %C%_t_network_SOURCES = %D%/t_network.c
 %C%_t_network_LDADD = $(with_balance)
 
+suites += %D%/t_null_space
+%C%_t_null_space_SOURCES = %D%/t_null_space.c
+%C%_t_null_space_LDADD = $(with_balance)
+
 suites += %D%/t_random
 %C%_t_random_SOURCES = %D%/t_random.c
 %C%_t_random_LDADD = $(with_balance)
