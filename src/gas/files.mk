@@ -19,6 +19,7 @@ noinst_LIBRARIES += %D%/libgas.a
   %D%/laboratory_by_sample.c \
   %D%/laboratory_heading.c \
   %D%/laboratory_layout.c \
+  %D%/laboratory_long.c \
   %D%/laboratory_private.h \
   %D%/moisture.c \
   %D%/moisture.h \

@@ -148,7 +148,8 @@ say_layout (struct laboratory *lab, struct arena *arena)
   static const char *const encodings[] = { "UTF-8", "UTF-8 with a mark", "Windows-1252" };
   const char delimiter = lab->csv.delimiter;
   lab->said.layout = arena_format (arena, "a %s in each row, %s, %s%s",
-                                   lab->by_rows ? "component" : "sample",
+                                   lab->in_long ? "component of a sample"
+                                   : lab->by_rows ? "component" : "sample",
                                    count_text (arena, lab->sample_count, "sample"),
                                    count_text (arena, lab->component_count, "component"),
                                    lab->numbered && lab->sample_count > 1

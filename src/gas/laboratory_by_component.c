@@ -152,21 +152,6 @@ is_amount_column (const struct laboratory *lab, size_t column, size_t first,
   return false;
 }
 
-/* A column of samples beside the components: of one sample, or nothing that is read.  */
-static bool
-one_sample (const struct laboratory *lab, size_t column, size_t first, struct fault *fault)
-{
-  const struct slice own = cell_slice (lab, first, column);
-  for (size_t r = first + 1; r < lab->row_count; r++) {
-    const struct slice other = cell_slice (lab, r, column);
-    if (other.n > 0 && (other.n != own.n || memcmp (other.at, own.at, own.n) != 0))
-      return complain_at (lab, lab->heading, column, MESSAGE_LABORATORY_LAYOUT,
-                          "a row for each component of each sample is not read",
-                          "give each sample a row, or a column, of its own", fault);
-  }
-  return true;
-}
-
 static bool
 columns_by_heading (struct laboratory *lab, struct arena *arena, size_t first,
                     struct fault *fault)
@@ -183,8 +168,6 @@ columns_by_heading (struct laboratory *lab, struct arena *arena, size_t first,
       continue;
     }
     layout_add_unit_row (lab, arena, k, &h);
-    if (h.kind == HEADING_SAMPLE && !one_sample (lab, k, first, fault))
-      return false;
     if (h.kind == HEADING_SPREAD) {
       if (!spread_of_sample (lab, k, &h, fault))
         return false;
@@ -282,6 +265,8 @@ layout_by_component (struct laboratory *lab, struct arena *arena, size_t names,
     first--;
   if (!find_headings (lab, arena, first, fault))
     return false;
+  if (lab->heading != NOWHERE && layout_is_long (lab, arena, first))
+    return layout_long (lab, arena, first, fault);
   if (!(lab->heading == NOWHERE ? columns_by_place (lab, arena, first)
                                 : columns_by_heading (lab, arena, first, fault)))
     return false;

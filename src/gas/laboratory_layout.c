@@ -167,7 +167,8 @@ layout_name_refused (const struct laboratory *lab, size_t row, size_t column, st
       == SPECIES_AMBIGUOUS)
     return complain_at (lab, row, column, MESSAGE_LABORATORY_NAME,
                         arena_format (fault->arena, "'%s' has more than one meaning", text),
-                        candidates, fault);
+                        arena_format (fault->arena, "%s; or define a gas called %s first",
+                                      candidates, text), fault);
   const char *near = species_nearest (lab->words->species, name.at, name.n);
   way_on = near != NULL ? arena_format (fault->arena, "did you mean '%s'?", near)
                         : "write a component's key, name or formula; a lump is a gas of that name";

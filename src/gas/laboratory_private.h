@@ -1,7 +1,8 @@
 /* What the files that read a laboratory's file share.
 
    laboratory_heading.c tells what a heading means, laboratory_amount.c what a cell says,
-   laboratory_layout.c, laboratory_by_sample.c and laboratory_by_component.c where things stand;
+   laboratory_layout.c, laboratory_by_sample.c, laboratory_by_component.c and laboratory_long.c
+   where things stand;
    laboratory.c puts samples together.                                                           */
 #ifndef GAS_LABORATORY_PRIVATE_H
 #define GAS_LABORATORY_PRIVATE_H
@@ -121,6 +122,7 @@ struct laboratory {
   const struct unit *unit;        /* what the file says for all of it; or null */
   const char *unit_text;
   bool percent;
+  bool in_long;                   /* it had a component of a sample in each row */
   bool numbered;                  /* samples have no names of their own */
   struct laboratory_said said;
   const char *passed;             /* being put together */
@@ -143,6 +145,11 @@ bool layout_by_sample (struct laboratory *, struct arena *, size_t heading, stru
   MUST_CHECK;
 bool layout_by_component (struct laboratory *, struct arena *, size_t names, struct fault *)
   MUST_CHECK;
+
+/* A component of a sample in each row?  FIRST is the first row below the headings.  */
+bool layout_is_long (const struct laboratory *, struct arena *, size_t first);
+/* Turns such rows into one for each sample.  */
+bool layout_long (struct laboratory *, struct arena *, size_t first, struct fault *) MUST_CHECK;
 
 /* A row above the headings: a unit or `dry` for all of it, or nothing that counts.  */
 bool layout_preface (struct laboratory *, struct arena *, size_t row, struct fault *) MUST_CHECK;

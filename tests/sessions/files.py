@@ -151,9 +151,57 @@ BAD = [
      "laboratory-unit", "2:8", "uncertainty in mass%"),
     ("mass per cubic metre of no state", "component,mol%\nCH4,60\nH2S,1200 mg/m3\n", "",
      "laboratory-unit", "3:5", "mg/Nm3"),
-    ("a row for each component of each sample",
+    # -- A component of a sample in each row
+    ("of many samples none is said",
      "sample,component,mol%\nA,CH4,60\nA,CO2,40\nB,CH4,61\nB,CO2,39\n", "",
-     "laboratory-layout", "1:1", "each sample a row"),
+     "laboratory-sample", "2:1", '"A", "B"'),
+    ("a row that names no sample",
+     "sample,component,mol%\nA,CH4,60\n,CO2,40\nB,CH4,61\nB,CO2,39\n", 'sample "B"',
+     "laboratory-sample", "3:1", "names none"),
+    ("a figure of no component",
+     "sample,component,mol%\nA,CH4,60\nA,,40\nB,CH4,61\nB,CO2,39\n", 'sample "B"',
+     "laboratory-name", "3:3", "no component"),
+    ("a misspelt name among samples",
+     "sample,component,mol%\nA,CH4,60\nA,metane,40\nB,CH4,61\nB,CO2,39\n", 'sample "B"',
+     "laboratory-name", "3:3", "did you mean 'CH4'"),
+    ("a component twice in a sample",
+     "sample,component,mol%\nA,CH4,60\nA,methane,40\nB,CH4,61\nB,CO2,39\n", 'sample "B"',
+     "laboratory-twice", "3:3", "CH4 of A"),
+    ("a component twice on one day",
+     "date,component,mol%\n2026-11-02,CH4,60\n2026-11-02,CH4,61\n2026-11-03,CH4,60\n"
+     "2026-11-03,CO2,40\n", 'sample "2026-11-03"', "laboratory-twice", "3:12", "FILE:2:16"),
+    ("a unit nobody knows in one row",
+     "sample,component,value,unit\nA,CH4,60,mol%\nA,CO2,40,bar\nB,CH4,61,mol%\nB,CO2,39,mol%\n",
+     'sample "B"', "laboratory-unit", "3:10", "'bar'"),
+    ("dry in one row, wet in another",
+     "sample,component,value,unit,basis\nA,CH4,60,mol%,dry\nA,CO2,40,mol%,dry\n"
+     "B,CH4,61,mol%,wet\nB,CO2,39,mol%,dry\n", 'sample "B"', "laboratory-moisture", "4:15",
+     "dry is said in one place"),
+    ("a basis that says neither",
+     "sample,component,value,unit,basis\nA,CH4,60,mol%,dry\nA,CO2,40,mol%,moist\n"
+     "B,CH4,61,mol%,dry\nB,CO2,39,mol%,dry\n", 'sample "B"', "laboratory-moisture", "3:15",
+     "'moist' says neither"),
+    ("no amount among samples",
+     "sample,component,value,unit\nA,CH4,60,mol%\nA,CO2,forty,mol%\nB,CH4,61,mol%\n"
+     "B,CO2,39,mol%\n", 'sample "A"', "laboratory-amount", "3:7", "'forty' is no amount of CO2"),
+    ("an uncertainty that is none",
+     "sample,component,mol%,u\nA,CH4,60,x\nA,CO2,40,\nB,CH4,61,\nB,CO2,39,\n", 'sample "A"',
+     "laboratory-amount", "2:10", "'x' is no uncertainty"),
+    ("two columns of figures",
+     "sample,component,mol%,mass%\nA,CH4,60,40\nA,CO2,40,60\nB,CH4,61,40\nB,CO2,39,60\n",
+     'sample "A"', "laboratory-unit", "1:23", "'mol%' and 'mass%'"),
+    ("no column of figures",
+     "sample,component,peak\nA,CH4,60\nA,CO2,40\nB,CH4,61\nB,CO2,39\n", 'sample "A" mol%',
+     "laboratory-layout", "1:8", "no column is headed"),
+    ("more cells than headings, in one row",
+     "sample,component,mol%\nA,CH4,60\nA,CO2,40,7\nB,CH4,61\nB,CO2,39\n", 'sample "A"',
+     "csv-width", "3:10", "4 cells, the headings are 3"),
+    ("two decimal signs among samples",
+     "sample;component;mol%\nA;CH4;60,5\nA;CO2;39.5\nB;CH4;61,5\nB;CO2;38,5\n", 'sample "A"',
+     "laboratory-decimal", "2:7", "a point"),
+    ("figures without a unit among samples",
+     "sample,component,value\nA,CH4,60\nA,CO2,40\nB,CH4,61\nB,CO2,39\n", 'sample "A"',
+     "laboratory-unit", "2:7", "mol%, mass% or vol%"),
     ("nothing but the rest", "component,mol%\nCH4,rest\nCO2,n/a\n", "", "laboratory-layout",
      "2:1", "no figures"),
     # -- Samples, moisture
@@ -244,6 +292,17 @@ GOOD = [
      "Hydrogen sulfide,4.5,12,0.05,1\nTotal,,,100,100\n", "mol%"),
     ("a sample named beside its components", "sample,component,mol%\nA,CH4,60.5\nA,CO2,38.25\n"
      "A,N2,1.2\nA,H2S,0.05\n", ""),
+    ("a component of a sample in each row", "Sample ID;Analyte;Result;Unit\nB;CH4;1,5;mol-%\n"
+     "A;methane;60,5;mol-%\nA;H2S;500;ppm\nB;CO2;98,5;mol-%\nA;Nitrogen;1,2;mol-%\n"
+     "A;CO2;38,25;mol-%\n", 'sample "A"'),
+    ("a component of a day in each row", "date,component,mol%\n2026-11-02,CH4,1\n"
+     "2026-11-02,CO2,99\n2026-11-03,CH4,60.5\n2026-11-03,CO2,38.25\n2026-11-03,N2,1.2\n"
+     "2026-11-03,H2S,500 ppm\n", 'sample "2026-11-03"'),
+    ("one sampling point on two days", "sample,date,component,mol%\nT1,02.11.,CH4,1\n"
+     "T1,02.11.,CO2,99\nT1,03.11.,CH4,60.5\nT1,03.11.,CO2,38.25\nT1,03.11.,N2,1.2\n"
+     "T1,03.11.,H2S,0.05\n", 'sample "T1, 03.11."'),
+    ("of two columns of figures one is asked for", "sample,component,mass%,ppm\nB,CH4,1,2\n"
+     "A,CH4,3,605000\nA,CO2,4,382500\nA,N2,5,12000\nA,H2S,6,500\n", 'sample "A" ppm'),
     ("nitrogen as the rest",
      "component,mol%\nCH4,60.5\nCO2,38.25\nN2,balance\nH2S,0.05\n", ""),
     ("uncertainties beside",
@@ -271,6 +330,15 @@ SPREADS = [
     ("of a limit none", "component,mol%,u\nCH4,60,\nCO2,40,\nO2,<0,0.5\n", "", None),
 ]
 
+# A component of a sample in each row; the same uncertainties, and units that differ.
+LONG = "sample,component,value,unit,%s\nB,CH4,70,mol%%,\nA,CH4,%s\nB,CO2,30,mol%%,\nA,CO2,40,mol%%,\n"
+SPREADS += [
+    ("of a sample among others", LONG % ("u", "60,mol%,0.5"), 'sample "A"', 0.5),
+    ("of a sample, expanded", LONG % ("U (k=2)", "60,mol%,1"), 'sample "A"', 0.5),
+    ("of a sample, in its figure's unit", LONG % ("u", "600000,ppm,5000"), 'sample "A"', 0.5),
+    ("of a sample, in the cell", LONG % ("remark", "600000 ± 5000,ppm,"), 'sample "A"', 0.5),
+]
+
 # What has to be said of a file: name, file, words, piece of a note.
 SAID = [
     ("what a chromatograph prints beside its shares", "Name,RT,Area,Height,Amount\n"
@@ -280,6 +348,14 @@ SAID = [
      "Component,Result,Unit\nCH4,60,mol%\nCO2,40,mol%\n", "", "not read: line 1, line 2, line 3"),
     ("layout", "sample;CH4;CO2\nA;60;40\nB;61;39\n", 'sample "B" mol%',
      "a sample in each row, 2 samples, 2 components"),
+    ("a component of a sample in each row", "sample,component,mol%,operator\nA,CH4,60,jm\n"
+     "A,CO2,40,jm\nA,Total,100,\nsample,component,mol%,operator\nB,CH4,61,jm\nB,CO2,39,\n",
+     'sample "B"', "a component of a sample in each row, 2 samples, 2 components"),
+    ("what a long table passes over", "sample,component,mol%,operator\nA,CH4,60,jm\n"
+     "A,CO2,40,jm\nA,Total,100,\nsample,component,mol%,operator\nB,CH4,61,jm\nB,CO2,39,\n",
+     'sample "B"', "not read: column 'operator', line 4 (Total), line 5 (component)"),
+    ("what a sample of a long table lacks", "sample,component,mol%\nA,CH4,60\nA,CO2,39.5\n"
+     "A,O2,0.5\nB,CH4,61\nB,CO2,39\n", 'sample "B"', "left out: O2"),
     ("delimiter and sign", "sample;CH4;CO2\nA;60,5;39,5\n", "mol%",
      "cells parted by ';', decimal sign ',', UTF-8"),
     ("typed unit", "component,amount\nCH4,60\nCO2,40\n", "mol%", "figures in mol%, as typed"),
