@@ -17,6 +17,7 @@ EXTRA_DIST += \
   %D%/by_component.csv \
   %D%/fuzz.sh \
   %D%/fuzz_cells.sh \
+  %D%/in_long.csv \
   %D%/libfuzzer.c \
   %D%/libfuzzer_cells.c
 TESTS += %D%/fuzz.sh %D%/fuzz_cells.sh

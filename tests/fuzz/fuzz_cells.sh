@@ -5,4 +5,4 @@
 set -u
 demo=${srcdir:-.}/tables/demo
 exec tests/fuzz/mutate_cells 2 1 "$demo/digester.csv" "$demo/cleaned.csv" \
-  "${srcdir:-.}/tests/fuzz/by_component.csv"
+  "${srcdir:-.}/tests/fuzz/by_component.csv" "${srcdir:-.}/tests/fuzz/in_long.csv"
