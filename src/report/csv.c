@@ -263,6 +263,8 @@ trend_add (struct frame *frame, const struct trend *trend)
   number_add (frame, trend, "mean", trend->all.mean);
   number_add (frame, trend, "standard deviation", trend->all.standard_deviation);
   number_add (frame, trend, "median", trend->all.median);
+  if (isfinite (trend->all.robust_deviation))
+    number_add (frame, trend, "robust deviation", trend->all.robust_deviation);
   if (trend->outliers > 0) {
     number_add (frame, trend, "mean without outliers", trend->without.mean);
     number_add (frame, trend, "standard deviation without outliers",

@@ -334,6 +334,8 @@ numbers_add (struct text *out, const char *key, const struct trend_numbers *n)
   json_figure (out, ",\"mean\":", n->mean);
   json_figure (out, ",\"standard_deviation\":", n->standard_deviation);
   json_figure (out, ",\"median\":", n->median);
+  if (isfinite (n->robust_deviation))
+    json_figure (out, ",\"robust_deviation\":", n->robust_deviation);
   json_figure (out, ",\"least\":", n->least);
   json_figure (out, ",\"greatest\":", n->greatest);
   json_member (out, ",\"least_of\":", n->least_of);
@@ -366,6 +368,8 @@ trend_row_add (struct text *out, const struct trend *trend, const struct trend_r
   if (r->why != NULL)
     json_member (out, ",\"why\":", r->why);
   json_member (out, ",\"standing\":", standings[r->standing]);
+  if (trend->limit > 0 && isfinite (r->apart))
+    json_figure (out, ",\"apart\":", r->apart);
   text_add_char (out, '}');
 }
 
@@ -389,6 +393,13 @@ trend_add (struct text *out, const struct trend *trend)
     json_member (out, ",\"of\":", trend->tested_of);
     json_figure (out, ",\"straggler_above\":", trend->straggler);
     json_figure (out, ",\"outlier_above\":", trend->outlier);
+    text_add_char (out, '}');
+  }
+  if (trend->limit > 0) {
+    json_figure (out, ",\"hampel\":{\"limit\":", trend->limit);
+    text_add_format (out, ",\"beyond\":%zu", trend->beyond);
+    json_figure (out, ",\"farthest\":", trend->farthest);
+    json_member (out, ",\"of\":", trend->farthest_of);
     text_add_char (out, '}');
   }
   text_add_char (out, '}');

@@ -85,11 +85,35 @@ bar_add (struct text *out, const struct report_style *style, double share)
   return whole + (rest > 0);
 }
 
+/* Does Hampel's identifier mark the row?  */
+static bool
+is_far (const struct trend *trend, const struct trend_row *row)
+{
+  return trend->limit > 0 && fabs (row->apart) > trend->limit;
+}
+
+/* What stands behind a row's bar, parted by commas: how it stands to the others, its basis.  */
+static void
+behind_add (struct text *out, const struct report_style *style, const struct trend *trend,
+            const struct trend_row *row)
+{
+  static const char *const standings[] = { NULL, "straggler", "outlier" };
+  const char *const words[] = { standings[row->standing],
+                                is_far (trend, row) ? "far from the median" : NULL,
+                                row->moisture, row->basis };
+  bool any = false;
+  for (size_t i = 0; i < sizeof words / sizeof words[0]; i++)
+    if (words[i] != NULL) {
+      text_add (out, any ? (i == 2 || (i == 3 && words[2] == NULL) ? "   " : ", ") : "");
+      shown_add (out, style, words[i]);
+      any = true;
+    }
+}
+
 static void
 row_add (struct text *out, const struct report_style *style, const struct trend *trend,
          const struct trend_row *row, const struct widths *wide)
 {
-  static const char *const standings[] = { "", "straggler", "outlier" };
   struct text figure, spread;
   text_init (&figure);
   text_init (&spread);
@@ -117,16 +141,11 @@ row_add (struct text *out, const struct report_style *style, const struct trend 
     const double range = trend->all.greatest - trend->all.least;
     const size_t bar = bar_add (out, style,
                                 range > 0 ? (row->value - trend->all.least) / range : 1);
-    if (row->standing != TREND_USUAL || row->moisture != NULL || row->basis != NULL)
+    if (row->standing != TREND_USUAL || is_far (trend, row) || row->moisture != NULL
+        || row->basis != NULL)
       text_add_repeated (out, ' ', BAR_WIDTH - bar + GAP);
     fold = fold_here (out);
-    text_add (out, standings[row->standing]);
-    if (row->standing != TREND_USUAL && (row->moisture != NULL || row->basis != NULL))
-      text_add (out, "   ");
-    shown_add (out, style, row->moisture);
-    if (row->moisture != NULL && row->basis != NULL)
-      text_add (out, ", ");
-    shown_add (out, style, row->basis);
+    behind_add (out, style, trend, row);
   }
   fold_line (out, style, fold);
   text_add_char (out, '\n');
@@ -186,6 +205,28 @@ range_add (struct text *out, const struct report_style *style, const struct tren
   }
 }
 
+/* What Hampel's identifier says, or why it says nothing.  */
+static void
+robust_add (struct text *out, const struct report_style *style, const struct trend *trend)
+{
+  const struct fold fold = { out->length, MARGIN + 2 };
+  text_add_repeated (out, ' ', MARGIN);
+  if (trend->limit > 0) {
+    figure_add (out, style, "Hampel's identifier: robust deviation ", trend->all.robust_deviation);
+    text_add_format (out, "; %zu of %zu beyond ", trend->beyond, trend->all.count);
+    number_write_exact (out, trend->limit);
+    text_add (out, " of it from the median; farthest ");
+    shown_add (out, style, trend->farthest_of);
+    text_add (out, ", ");
+    number_write (out, trend->farthest, 3);
+  } else if (trend->all.count < TREND_FEWEST)
+    text_add (out, "fewer than 5 figures: no test tells well which of them is wrong");
+  else
+    text_add (out, "more than half are the same: no robust deviation, no identifier");
+  fold_line (out, style, fold);
+  text_add_char (out, '\n');
+}
+
 static void
 basis_add (struct text *out, const struct report_style *style, const struct trend *trend)
 {
@@ -220,6 +261,7 @@ report_trend (struct text *out, const struct report_style *style, const struct t
     row_add (out, style, trend, &trend->rows[i], &wide);
   numbers_add (out, style, "all ", &trend->all, "");
   range_add (out, style, trend);
+  robust_add (out, style, trend);
   if (trend->outliers > 0)
     numbers_add (out, style, "", &trend->without, " without outliers");
   basis_add (out, style, trend);

@@ -7,6 +7,9 @@
 #include <stdbool.h>
 #include <stddef.h>
 
+/* Of fewer figures there is no robust deviation.  */
+enum { TREND_FEWEST = 5 };
+
 /* How a figure stands to the others, by Grubbs' test: usual, beyond 5 %, beyond 1 %.  */
 enum trend_standing { TREND_USUAL, TREND_STRAGGLER, TREND_OUTLIER };
 
@@ -17,6 +20,7 @@ struct trend_row {
   const char *moisture, *basis;   /* of its own where the rows differ; else null */
   const char *why;
   enum trend_standing standing;
+  double apart;                   /* from the median in robust deviations; NAN where it has none */
 };
 
 struct trend_numbers {
@@ -24,6 +28,7 @@ struct trend_numbers {
   double mean, median, standard_deviation;       /* NAN where there is none */
   double least, greatest;
   const char *least_of, *greatest_of;
+  double robust_deviation;        /* of the median; NAN where there is none */
 };
 
 struct trend {
@@ -38,6 +43,12 @@ struct trend {
   bool tested;                    /* by Grubbs' test, the last of which came to: */
   double G, straggler, outlier;
   const char *tested_of;
+  /* Hampel's identifier: `beyond` rows are farther from the median than `limit` robust deviations;
+     the farthest one is.  */
+  double limit;                   /* 0: there was no robust deviation */
+  size_t beyond;
+  double farthest;
+  const char *farthest_of;
 };
 
 #endif

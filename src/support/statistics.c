@@ -36,10 +36,36 @@ by_size (const void *left, const void *right)
   return a < b ? -1 : a > b;
 }
 
+const double HAMPEL_LIMIT = 3;
+
+/* The median of N sorted figures.  */
+static double
+middle (const double sorted[], size_t n)
+{
+  return n % 2 == 1 ? sorted[n / 2] : 0.5 * (sorted[n / 2 - 1] + sorted[n / 2]);
+}
+
+/* The median of the distances from the median over the upper quartile of the standard normal
+   distribution, which makes it the standard deviation of normal figures (F. R. Hampel, J. Am. Stat.
+   Assoc. 69 (1974) 383; L. Davies and U. Gather, J. Am. Stat. Assoc. 88 (1993) 782).  SORTED is
+   used up.                                                                                      */
+static double
+robust_deviation (double sorted[], size_t n, double median)
+{
+  if (n < ROBUST_LEAST)
+    return (double) NAN;
+  for (size_t i = 0; i < n; i++)
+    sorted[i] = fabs (sorted[i] - median);
+  qsort (sorted, n, sizeof *sorted, by_size);
+  const double distance = middle (sorted, n);
+  return distance > 1e-12 * fabs (median) ? distance / gsl_cdf_ugaussian_Pinv (0.75)
+                                          : (double) NAN;
+}
+
 struct statistics
 statistics_of (struct arena *arena, const double x[], const bool left_out[], size_t n)
 {
-  struct statistics s = { 0, (double) NAN, (double) NAN, (double) NAN, (double) NAN,
+  struct statistics s = { 0, (double) NAN, (double) NAN, (double) NAN, (double) NAN, (double) NAN,
                           (double) NAN, 0, 0 };
   double *sorted = ARENA_ARRAY (arena, n + 1, double);
   for (size_t i = 0; i < n; i++) {
@@ -59,8 +85,8 @@ statistics_of (struct arena *arena, const double x[], const bool left_out[], siz
     return s;
   mean_and_spread (x, left_out, n, &s);
   qsort (sorted, s.count, sizeof *sorted, by_size);
-  const size_t half = s.count / 2;
-  s.median = s.count % 2 == 1 ? sorted[half] : 0.5 * (sorted[half - 1] + sorted[half]);
+  s.median = middle (sorted, s.count);
+  s.robust_deviation = robust_deviation (sorted, s.count, s.median);
   return s;
 }
 

@@ -12,9 +12,18 @@ struct statistics {
   size_t count;
   double mean, median;            /* NAN for none */
   double standard_deviation;      /* of the sample (n - 1); NAN for fewer than two */
+  double robust_deviation;        /* of the median; NAN for fewer than ROBUST_LEAST, or where more
+                                     than half of the figures are the same */
   double least, greatest;
   size_t least_at, greatest_at;   /* the first of each */
 };
+
+/* Of fewer figures a median of distances says nothing of a spread.  Common practice, no source.  */
+enum { ROBUST_LEAST = 5 };
+/* Farther from the median than this many robust deviations a figure is no part of the rest
+   (Hampel's identifier; the 3 is the usual one: R. K. Pearson, IEEE Trans. Control Syst. Technol.
+   10 (2002) 55, from memory).                                                                   */
+extern const double HAMPEL_LIMIT;
 
 /* Of the N figures at X that LEFT_OUT (null: none) does not mark.  A copy is sorted in ARENA.   */
 struct statistics statistics_of (struct arena *, const double x[], const bool left_out[], size_t n);

@@ -86,20 +86,24 @@ static void
 build_trend (struct result *result)
 {
   static const struct trend_row rows[] = {
-    { .name = "D-101", .value = 22.861, .uncertainty = 0.046 },
-    { .name = "Mon \xC2\xB5", .value = 23.0, .uncertainty = (double) NAN },
-    { .name = "D-104", .value = 20.689, .uncertainty = 0.044, .standing = TREND_OUTLIER },
-    { .name = "D-105", .value = (double) NAN, .uncertainty = (double) NAN,
+    { .name = "D-101", .value = 22.861, .uncertainty = 0.046, .apart = 0.694 },
+    { .name = "Mon \xC2\xB5", .value = 23.0, .uncertainty = (double) NAN, .apart = 0.919 },
+    { .name = "D-104", .value = 20.689, .uncertainty = 0.044, .standing = TREND_OUTLIER,
+      .apart = -3.24 },
+    { .name = "D-105", .value = (double) NAN, .uncertainty = (double) NAN, .apart = (double) NAN,
       .why = "'lab' is open: its parts add up to 99.1 mol%" },
     { .name = "D-106", .value = 22.0, .uncertainty = 0.05, .standing = TREND_STRAGGLER,
+      .apart = -0.694,
       .basis = "water 3 mol%" }
   };
   static const struct trend trend = {
     .what = "wobbe of lab", .over = "5 samples of week.csv", .unit = "MJ/m3", .moisture = "dry",
     .coverage = 2, .count = 5, .outliers = 1, .rows = rows,
-    .all = { 4, 22.1375, 22.4305, 1.0682, 20.689, 23.0, "D-104", "Mon \xC2\xB5" },
-    .without = { 3, 22.62, 22.861, 0.5416, 22.0, 23.0, "D-106", "Mon \xC2\xB5" },
-    .tested = true, .G = 1.145, .straggler = 1.1543, .outlier = 1.1547, .tested_of = "D-106"
+    .all = { 4, 22.1375, 22.4305, 1.0682, 20.689, 23.0, "D-104", "Mon \xC2\xB5", 0.62 },
+    .without = { 3, 22.62, 22.861, 0.5416, 22.0, 23.0, "D-106", "Mon \xC2\xB5",
+                 (double) NAN },
+    .tested = true, .G = 1.145, .straggler = 1.1543, .outlier = 1.1547, .tested_of = "D-106",
+    .limit = 3, .beyond = 1, .farthest = -3.24, .farthest_of = "D-104"
   };
   result->statement = "trend wobbe of lab in MJ/m3";
   result->trend = &trend;

@@ -331,7 +331,8 @@ SPREADS = [
 ]
 
 # A component of a sample in each row; the same uncertainties, and units that differ.
-LONG = "sample,component,value,unit,%s\nB,CH4,70,mol%%,\nA,CH4,%s\nB,CO2,30,mol%%,\nA,CO2,40,mol%%,\n"
+LONG = ("sample,component,value,unit,%s\nB,CH4,70,mol%%,\nA,CH4,%s\nB,CO2,30,mol%%,\n"
+        "A,CO2,40,mol%%,\n")
 SPREADS += [
     ("of a sample among others", LONG % ("u", "60,mol%,0.5"), 'sample "A"', 0.5),
     ("of a sample, expanded", LONG % ("U (k=2)", "60,mol%,1"), 'sample "A"', 0.5),
@@ -583,6 +584,16 @@ def compare(trend, values, outliers=()):
                 "median": statistics.median(group), "least": min(group), "greatest": max(group)}
         wrong += ["%s %s: %s" % (key, name, line) for name, value in want.items()
                   for line in [session.off(got.get(name), value, 1e-9)] if line]
+        if key == "all" and len(group) >= 5:
+            middle = statistics.median(group)
+            spread = statistics.median(abs(v - middle) for v in group) / 0.6744897501960817
+            line = session.off(got.get("robust_deviation"), spread, 1e-9)
+            wrong += ["robust deviation: " + line] if line else []
+            far = sum(abs(v - middle) > 3 * spread for v in group)
+            got = trend.get("hampel", {}).get("beyond")
+            wrong += [] if got == far else ["hampel %s, not %d" % (got, far)]
+        elif key == "all":
+            wrong += [] if "hampel" not in trend else ["an identifier of too few"]
         if len(group) in GRUBBS and key == groups[-1][0]:
             test = trend.get("grubbs", {})
             for name, value in zip(("straggler_above", "outlier_above"), GRUBBS[len(group)]):
@@ -631,6 +642,16 @@ def trends(tap):
     tap.tell(compare(trend_of(session.answers(
         typed + "trend CH4 of raw3 in mol% with raw0, raw1, raw2, raw3, raw4")), want),
              "a trend over gases by name, asked of another of them")
+    tap.tell(compare(trend_of(session.answers(
+        typed + "trend CH4 of raw0 in mol% with raw0, raw1, raw2, raw3")),
+        {name: want[name] for name in list(want)[:4]}), "a trend over few gases has no identifier")
+    two = {"raw%d" % i: v for i, v in enumerate((60, 60.2, 59.9, 60.1, 60.3, 50, 50.1))}
+    found = trend_of(session.answers(
+        "".join("gas %s = CH4 %r, CO2 rest mol%%\n" % pair for pair in two.items())
+        + "trend CH4 of raw0 in mol% with raw*"))
+    wrong = compare(found, two)             # two hide one another from Grubbs' test
+    wrong += [] if found.get("hampel", {}).get("beyond") == 2 else [str(found.get("hampel"))]
+    tap.tell(wrong, "two outliers that hide one another are far from the median")
     write("u.csv", "sample,CH4,u,CO2\nA,60,0.5,40\nB,60,0.2,40\n")
     rows = trend_of(session.answers('gas lab from "u.csv" sample "A" mol%\n'
                                     "trend CH4 of lab in mol%")).get("rows", [{}, {}])

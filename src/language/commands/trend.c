@@ -303,7 +303,29 @@ numbers_of (const struct asking *a, const double x[], const bool left_out[])
   struct statistics s = statistics_of (a->result->arena, x, left_out, a->trend->count);
   return (struct trend_numbers) { s.count, s.mean, s.median, s.standard_deviation, s.least,
                                   s.greatest, a->rows[s.least_at].name,
-                                  a->rows[s.greatest_at].name };
+                                  a->rows[s.greatest_at].name, s.robust_deviation };
+}
+
+/* By Hampel's identifier, of all figures: those that are wrong move neither the median nor the
+   median of the distances, so one cannot hide behind another.                                   */
+static void
+find_far (struct asking *a)
+{
+  struct trend *t = a->trend;
+  const double u = t->all.robust_deviation;
+  t->limit = isfinite (u) ? HAMPEL_LIMIT : 0;
+  for (size_t i = 0; i < t->count; i++) {
+    struct trend_row *r = &a->rows[i];
+    r->apart = isfinite (u) && !r->why ? (r->value - t->all.median) / u : UNSTATED;
+    if (!isfinite (r->apart)) {
+      continue;
+    }
+    t->beyond += fabs (r->apart) > t->limit;
+    if (!t->farthest_of || fabs (r->apart) > fabs (t->farthest)) {
+      t->farthest = r->apart;
+      t->farthest_of = r->name;
+    }
+  }
 }
 
 /* Outliers one by one, until the farthest of the rest is none; that may be a straggler.  As many
@@ -341,6 +363,7 @@ add_up (struct asking *a)
     left_out[i] = a->rows[i].why != NULL;
   }
   t->all = numbers_of (a, x, left_out);
+  find_far (a);
   find_outliers (a, x, left_out);
   t->without = numbers_of (a, x, left_out);
 }

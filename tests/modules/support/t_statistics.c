@@ -44,6 +44,25 @@ some_left_out (void)
   arena_destroy (arena);
 }
 
+/* 1.4826 times the median of the distances from the median, by hand: of 2 4 4 4 5 5 7 9 the median
+   is 4.5 and the distances 0.5 (five times), 2.5 (twice), 4.5.  The factor is 1/0.67448975 (upper
+   quartile of the normal distribution).  */
+static void
+robust (void)
+{
+  static const double x[] = { 2, 4, 4, 4, 5, 5, 7, 9 }, far[] = { 4, 5, 6, 5.5, 1000, 3 },
+    same[] = { 7, 7, 7, 7, 9 };
+  static const bool out[] = { false, false, false, false, false, true };
+  struct arena *arena = arena_create ();
+  NEAR (statistics_of (arena, x, NULL, 8).robust_deviation, 0.5 / 0.6744897501960817, 1e-12);
+  /* Of 4 5 6 5.5 1000 the median is 5.5, the distances 1.5 0.5 0.5 0 994.5.  */
+  NEAR (statistics_of (arena, far, out, 6).robust_deviation, 0.5 / 0.6744897501960817, 1e-12);
+  CHECK (isnan (statistics_of (arena, same, NULL, 5).robust_deviation));
+  CHECK (isnan (statistics_of (arena, x, NULL, 4).robust_deviation));
+  NEAR (HAMPEL_LIMIT, 3, 0);
+  arena_destroy (arena);
+}
+
 /* Digits that a sum of squares would lose: NIST Statistical Reference Datasets, NumAcc4 (lower):
    1 000 000.2 and pairs of .1 and .3: mean 10000000.2, standard deviation 0.1.                   */
 static void
@@ -102,6 +121,7 @@ nothing_to_test (void)
 static const struct test_case cases[] = {
   { "a set of figures", a_set_of_figures },
   { "some left out", some_left_out },
+  { "robust", robust },
   { "digits do not cancel", digits_do_not_cancel },
   { "critical values", critical_values },
   { "copper wire", copper_wire },
