@@ -90,7 +90,7 @@ static bool
 parse_boundary (struct parser *p, struct statement *statement)
 {
   /* NAME ":" NAME { "+" NAME } "=" NAME { "+" NAME } [ "with" reaction { "," reaction } ]  */
-  if (!parse_new_name (p, &statement->name, &statement->name_at))
+  if (!parse_new_name (p, BOUNDARY, &statement->name, &statement->name_at))
     return false;
   if (!accept (p, TOKEN_COLON))
     return fail_unexpected (p, BOUNDARY);

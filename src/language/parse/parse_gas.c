@@ -132,7 +132,7 @@ bool
 parse_gas (struct parser *p, struct statement *statement)
 {
   /* "gas" NAME ( "=" ( list | chain ) | "from" ... | "with" ... )  */
-  if (!parse_new_name (p, &statement->name, &statement->name_at))
+  if (!parse_new_name (p, FORM, &statement->name, &statement->name_at))
     return false;
   if (accept_word (p, "from"))
     return parse_from_file (p, statement, true);

@@ -199,7 +199,7 @@ is_key (const struct parser *p, const char *text)
 }
 
 bool
-parse_new_name (struct parser *p, const char **name, struct place *at)
+parse_new_name (struct parser *p, const char *form, const char **name, struct place *at)
 {
   struct token t = p->token;
   const char *text = p->scan.text + t.start;
@@ -208,7 +208,7 @@ parse_new_name (struct parser *p, const char **name, struct place *at)
   if (t.kind == TOKEN_TEXT && t.end - t.start == 2)
     return fail (p, MESSAGE_NAME_FORM, t.at, "\"\"", "a name is not empty");
   if (t.kind != TOKEN_WORD && t.kind != TOKEN_TEXT)
-    return fail_here (p, MESSAGE_NAME_EXPECTED, NULL, NULL);
+    return fail_here (p, MESSAGE_NAME_EXPECTED, form, NULL);
   if (t.kind == TOKEN_WORD && word_is_reserved (text, t.end - t.start))
     return fail (p, MESSAGE_NAME_RESERVED, t.at, token_text (p, &t), "is a word of the language");
   if (t.kind == TOKEN_WORD && joined_to_name (p, &t))

@@ -151,8 +151,8 @@ struct node *parse_fuel (struct parser *, const char *way_on);
 size_t fuel_words (const struct parser *);
 /* NAME { "," NAME }  */
 struct node *parse_names (struct parser *, const char *way_on);
-/* NAME, where one is made.  */
-bool parse_new_name (struct parser *, const char **name, struct place *at);
+/* NAME, where one is made.  FORM: what the whole looks like.  */
+bool parse_new_name (struct parser *, const char *form, const char **name, struct place *at);
 /* Bytes of the name that begins at the token: one word, or a component's of several.  */
 size_t name_length (const struct parser *, const struct token *);
 

@@ -8,8 +8,8 @@
 static bool
 parse_stream (struct parser *p, struct statement *statement)
 {
-  if (!parse_new_name (p, &statement->name, &statement->name_at)
-      || !expect_equals (p, "stream NAME = ..."))
+  const char *form = "stream NAME = ...";
+  if (!parse_new_name (p, form, &statement->name, &statement->name_at) || !expect_equals (p, form))
     return false;
   if ((statement->value = parse_sum (p)) == NULL)
     return false;
@@ -22,8 +22,8 @@ parse_stream (struct parser *p, struct statement *statement)
 static bool
 parse_let (struct parser *p, struct statement *statement)
 {
-  if (!parse_new_name (p, &statement->name, &statement->name_at)
-      || !expect_equals (p, "let NAME = ..."))
+  const char *form = "let NAME = ...";
+  if (!parse_new_name (p, form, &statement->name, &statement->name_at) || !expect_equals (p, form))
     return false;
   if ((statement->value = parse_sum (p)) == NULL)
     return false;
@@ -37,7 +37,7 @@ static bool
 parse_reference (struct parser *p, struct statement *statement)
 {
   const char *form = "reference NAME = T, P";
-  if (!parse_new_name (p, &statement->name, &statement->name_at) || !expect_equals (p, form))
+  if (!parse_new_name (p, form, &statement->name, &statement->name_at) || !expect_equals (p, form))
     return false;
   statement->value = parse_state (p, NULL, p->last);
   return statement->value != NULL && expect_end (p, form);
@@ -95,8 +95,8 @@ parse_solve (struct parser *p, struct statement *statement)
 static bool
 parse_balance (struct parser *p, struct statement *statement)
 {
-  const char *form = "balance NAME";
-  if (!parse_new_name (p, &statement->name, &statement->name_at) || !expect_end (p, form))
+  const char *form = "balance NAME, its lines below, then end";
+  if (!parse_new_name (p, form, &statement->name, &statement->name_at) || !expect_end (p, form))
     return false;
   p->block = BLOCK_BALANCE;
   return true;
@@ -107,7 +107,8 @@ static bool
 parse_sheet (struct parser *p, struct statement *statement)
 {
   const char *form = "sheet NAME of GAS";
-  if (!parse_new_name (p, &statement->name, &statement->name_at) || !expect_word (p, "of", form))
+  if (!parse_new_name (p, form, &statement->name, &statement->name_at)
+      || !expect_word (p, "of", form))
     return false;
   if ((statement->value = parse_sum (p)) == NULL || !(at_end (p) || fail_behind_sum (p, form)))
     return false;
@@ -181,7 +182,8 @@ parse_picture (struct parser *p, struct statement *statement)
     return false;
   for (const struct target *t = statement->targets; t; t = t->next)
     if (t->as != NULL)
-      return fail (p, MESSAGE_WORD_UNEXPECTED, t->at, t->as, "a picture has no labels of its own");
+      return fail (p, MESSAGE_WORD_UNEXPECTED, t->at, t->as,
+                   "a picture has no labels of its own: as picture \"chart.svg\"");
   if (!expect_word (p, "as", form) || !expect_word (p, "picture", form))
     return false;
   statement->text_at = p->token.at;
@@ -247,6 +249,8 @@ static bool
 parse_trend (struct parser *p, struct statement *statement)
 {
   const char *form = "trend wobbe of lab in MJ/m3, trend wobbe of raw1 with raw*";
+  if (at_end (p))
+    return fail_unfinished (p, form);
   if ((statement->value = parse_sum (p)) == NULL)
     return false;
   if (accept_word (p, "in") && (statement->targets = parse_targets (p, true)) == NULL)

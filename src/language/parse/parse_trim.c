@@ -186,6 +186,8 @@ parse_check (struct parser *p, struct statement *statement)
   /* "check" ( NAME | sum [ "in" target ] "against" claim )  */
   const char *form = "check WHAT against FIGURE";
   struct token name = p->token;
+  if (at_end (p))
+    return fail_unfinished (p, form);
   struct node *what = parse_sum (p);
   if (what == NULL)
     return false;
