@@ -347,6 +347,28 @@ find_envelope (struct work *work, struct conflict *conflict)
   find_gap (work, mu, at, conflict);
 }
 
+/* The combination of the facts that does not close, scaled so that it comes to the gap.  */
+static void
+find_terms (const struct work *work, struct conflict *conflict)
+{
+  const struct system *system = work->system;
+  struct conflict_term *terms = ARENA_ARRAY (work->keep, work->rows + 1, struct conflict_term);
+  double raw = 0;
+  for (size_t i = 0; i < work->rows; i++) {
+    raw -= work->lambda[i] * work->right[i];
+  }
+  const double scale = conflict->gap / raw;
+  for (size_t i = 0; i < work->rows && fabs (raw) > work->floor && isfinite (scale); i++) {
+    const struct row *row = &system->rows.row[system->structure + i];
+    if (fabs (work->lambda[i]) > 0) {
+      terms[conflict->term_count++] = (struct conflict_term) {
+        row->of, row->component, system->rows.right[system->structure + i],
+        -work->lambda[i] * system->row_scale[system->structure + i] * scale };
+    }
+  }
+  conflict->terms = terms;
+}
+
 /* The component of a composition that is most at odds: that of the gap, else the one with the
    greatest multiplier.                                                                          */
 static size_t
@@ -439,6 +461,7 @@ conflict_find (struct arena *keep, const struct core *core, struct solution *sol
     return false;
   }
   find_envelope (&work, conflict);
+  find_terms (&work, conflict);
   add_causes (&work);
   if (!thin_out (&work, fault) || !find_suspects (&work, conflict, fault)) {
     return false;

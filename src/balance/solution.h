@@ -48,6 +48,9 @@ struct relation_left { size_t stream; double constant; size_t count; const size_
    fault (for a composition: component COMPONENT of it); not plausible where that is negative, a
    fraction above one, or nothing at all (NAN).                                                  */
 struct suspect { size_t fact, component; double needed; bool plausible; };
+/* A row of a fact in the combination that does not close: what it says, mol/s (mol/mol, 1), times
+   FACTOR; of a composition the row of COMPONENT.                                                */
+struct conflict_term { size_t fact, component; double says, factor; };
 struct conflict {
   size_t count;                  /* facts in the smallest set */
   const struct suspect *suspects;
@@ -55,6 +58,8 @@ struct conflict {
   size_t component;              /* that is out; `components`: the total is */
   double gap;                    /* what goes in less what comes out, mol/s; NAN, with nothing
                                     around, where fractions and ratios hold only if nothing flows */
+  size_t term_count; const struct conflict_term *terms;  /* they add up to the gap; of a
+                                    combination that closes none */
   double p;                      /* of agreement within the digits typed */
 };
 

@@ -413,6 +413,37 @@ def balances(tap):
                            for step in after["workings"]) else ["no such step"]))
 
 
+CLASH = """
+balance plant
+  separate membrane: feed = product + tail
+  known feed = 850 kmol/h of (CH4 60, CO2 40 mol%)
+  known CH4 of product = 97 mol%
+  known tail = 300 kmol/h
+  known CH4 of tail = 2 mol%
+end
+solve plant
+workings
+"""
+
+
+def clash(tap):
+    """In less out is 0.6 feed - 0.97 (feed - tail) - 0.02 tail = -0.37 850 + 0.95 300, by hand."""
+    solved, workings = answers(CLASH)[-2:]
+    steps = {step["step"]: step for step in workings.get("workings", [])}
+    step = steps.get("gap around membrane, CH4")
+    if step is None:
+        return tap.check("a clash shows what does not close", sorted(steps))
+    wrong = recompute(step) + unsourced(step)
+    if apart(step["value"], -29.5 / 3.6) or apart(solved["balance"]["gap"]["value"], -29.5):
+        wrong.append("%r, %r" % (step["value"], solved["balance"]["gap"]))
+    shares = {term["of"]: term["values"] for term in step["terms"]}
+    for line, share in (("known feed = 850 kmol/h of (CH4 60, CO2 40 mol%)", -0.37),
+                        ("known tail = 300 kmol/h", 0.95)):
+        if apart(shares[line]["k_i"], share):
+            wrong.append("%s: %r" % (line, shares[line]))
+    return tap.check("a clash shows what does not close", wrong)
+
+
 def forms(tap):
     text = PREAMBLE + "850 Nm3/h of raw in kg/h\nworkings\n"
     status, out, _ = run(text, "text")
@@ -449,6 +480,7 @@ def main():
     short_names(tap)
     others(tap)
     balances(tap)
+    clash(tap)
     forms(tap)
     return tap.finish()
 

@@ -4,6 +4,7 @@
 #include "language/balance/plant_record.h"
 
 #include <math.h>
+#include "language/balance/verdict_private.h"
 #include "language/evaluate/record.h"
 #include "language/evaluate/wording.h"
 #include "language/kept.h"
@@ -163,6 +164,42 @@ rows_of (struct arena *arena, const struct balance_verdict *v, size_t *count)
   return rows.first;
 }
 
+/* What the lines of a clash say, each times its share in the combination that must be nothing and
+   is the gap.                                                                                   */
+static void
+record_clash (struct session *session, const struct result *result, const struct plant *plant,
+              const struct balance_verdict *v)
+{
+  const struct conflict *conflict = plant->solution->conflict;
+  const size_t n = conflict ? conflict->term_count : 0;
+  struct arena *arena = result->arena;
+  double *says = ARENA_ARRAY (arena, n, double), *factor = ARENA_ARRAY (arena, n, double), sum = 0;
+  const char **terms = ARENA_ARRAY (arena, n, const char *);
+  for (size_t i = 0; i < n; i++) {
+    const struct conflict_term *t = &conflict->terms[i];
+    const struct plant_fact *fact = &plant->fact[t->fact];
+    const bool part = plant->network.fact[t->fact].kind == FACT_COMPOSITION
+                      && t->component < plant->network.components;
+    terms[i] = part ? arena_format (arena, "%s, its %s", fact->text,
+                                    component_text (plant, t->component)) : fact->text;
+    says[i] = t->says;
+    factor[i] = t->factor;
+    sum += t->says * t->factor;
+  }
+  if (n > 0) {
+    kept_extend (session, result, &(struct step) {
+        .name = v->gap_around ? "gap around" : "gap of",
+        .of = v->gap_around ? arena_format (arena, "%s, %s", v->gap_around, v->gap_component)
+                            : v->name,
+        .formula = "g = sum(k_i b_i)", .value = sum, .unit = flow_unit (plant),
+        .solved = "balances and lines combined so that every unknown falls out",
+        .source = "k_i: share of a line; b_i: the flow it states, 0 where it ties flows together",
+        .terms = terms, .term_count = (unsigned) n,
+        STEP_COLUMNS ({ "k_i", factor, "1", NULL, NULL },
+                      { "b_i", says, flow_unit (plant), NULL, NULL }) });
+  }
+}
+
 void
 plant_record (struct evaluation *ev, const struct statement *s, const struct plant *plant,
               const struct result *result)
@@ -184,6 +221,7 @@ plant_record (struct evaluation *ev, const struct statement *s, const struct pla
   if (!plant->solution) {
     return;
   }
+  record_clash (session, result, plant, v);
   if (v->tested) {
     kept_extend (session, result, &(struct step) {
         .name = "global test of", .of = v->name, .formula = "", .value = v->chi2, .unit = "1",
