@@ -195,6 +195,7 @@ record_clash (struct session *session, const struct result *result, const struct
         .solved = "balances and lines combined so that every unknown falls out",
         .source = "k_i: share of a line; b_i: the flow it states, 0 where it ties flows together",
         .terms = terms, .term_count = (unsigned) n,
+        STEP_SYMBOLS (SYMBOL ("g", sum, flow_unit (plant))),
         STEP_COLUMNS ({ "k_i", factor, "1", NULL, NULL },
                       { "b_i", says, flow_unit (plant), NULL, NULL }) });
   }
