@@ -452,6 +452,7 @@ conflict_find (struct arena *keep, const struct core *core, struct solution *sol
                struct fault *fault)
 {
   struct conflict *conflict = ARENA_NEW (keep, struct conflict);
+  conflict->still = core->network->streams;
   system_left (core->arena, core->system);
   struct work work = { .keep = keep, .arena = core->arena, .core = core,
                        .system = core->system, .surplus = core->system->surplus,

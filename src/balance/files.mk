@@ -9,6 +9,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/bounded.h \
   %D%/column_order.c \
   %D%/column_order.h \
+  %D%/cone.c \
+  %D%/cone.h \
   %D%/conflict.c \
   %D%/conflict.h \
   %D%/core.c \
@@ -52,8 +54,12 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/reduce.h \
   %D%/settle.c \
   %D%/settle.h \
+  %D%/simplex.c \
+  %D%/simplex.h \
   %D%/solution.h \
   %D%/solve.c \
+  %D%/still.c \
+  %D%/still.h \
   %D%/suggest.c \
   %D%/suggest.h \
   %D%/suspect.c \

@@ -161,6 +161,13 @@ choose_values (struct work *work)
   if (work->feasible) {
     program_inside (work->program, 0, work->value);
     system_correct (work->core->system, work->core->v, work->value);
+    for (size_t j = 0; j < work->flows; j++) {
+      work->unit = fmax (work->unit, fabs (work->value[j]));
+    }
+    for (size_t j = 0; j < work->flows; j++) {
+      bool none = work->fixed[j] && fabs (work->value[j]) <= no_width * work->unit;
+      work->value[j] = none ? 0 : work->value[j];
+    }
   } else {
     program_point (work->program, work->value);
   }

@@ -136,7 +136,8 @@ speaks_of_flows (const struct core *flowing, const struct conflict *conflict)
 
 /* The clash without the flow that was put in, which says nothing about what it is out by.  */
 static const struct conflict *
-without_flow (struct arena *keep, const struct core *flowing, const struct conflict *conflict)
+without_flow (struct arena *keep, const struct core *flowing, const struct conflict *conflict,
+              size_t stream)
 {
   struct conflict *out = ARENA_NEW (keep, struct conflict);
   struct suspect *suspects = ARENA_ARRAY (keep, conflict->count + 1, struct suspect);
@@ -149,6 +150,7 @@ without_flow (struct arena *keep, const struct core *flowing, const struct confl
   }
   out->suspects = suspects;
   out->gap = (double) NAN;
+  out->still = stream;
   out->around = ARENA_ARRAY (keep, flowing->network->boundaries + 1, bool);
   return out;
 }
@@ -179,7 +181,8 @@ try_flow (struct arena *keep, struct idle *idle, size_t stream, struct fault *fa
     return false;
   }
   if (!speaks_of_flows (flowing, solution.conflict)) {
-    idle->conflict = without_flow (keep, flowing, solution.conflict);
+    const struct conflict *clash = without_flow (keep, flowing, solution.conflict, stream);
+    idle->conflict = clash->count > 1 ? clash : NULL;   /* one alone means it: all goes elsewhere */
   }
   return true;
 }

@@ -47,7 +47,11 @@ struct relation_left { size_t stream; double constant; size_t count; const size_
 /* Facts that cannot all hold.  `needed` is what the fact would have to say if it alone were at
    fault (for a composition: component COMPONENT of it); not plausible where that is negative, a
    fraction above one, or nothing at all (NAN).                                                  */
-struct suspect { size_t fact, component; double needed; bool plausible; };
+struct suspect {
+  size_t fact, component;
+  double needed; bool plausible;
+  double least, greatest;        /* plausible, and not one value: what it could say */
+};
 /* A row of a fact in the combination that does not close: what it says, mol/s (mol/mol, 1), times
    FACTOR; of a composition the row of COMPONENT.                                                */
 struct conflict_term { size_t fact, component; double says, factor; };
@@ -61,6 +65,10 @@ struct conflict {
   size_t term_count; const struct conflict_term *terms;  /* they add up to the gap; of a
                                     combination that closes none */
   double p;                      /* of agreement within the digits typed */
+  bool least;                    /* no smaller set clashes; false: none of its facts can be left
+                                    out, more is not known */
+  size_t still;                  /* the facts hold only if nothing flows in this stream; `streams`:
+                                    not even then */
 };
 
 /* A result that hangs on the last digits of figures: it moves by `moves` when each of them moves by
@@ -117,6 +125,7 @@ struct solution {
                                     largest flow */
   double mass_in, mass_out;      /* over all that crosses the network's edge, kg/s; NAN: open */
   size_t negative_count; const size_t *negative;         /* columns below zero */
+  const struct conflict *impossible;     /* facts that leave no other; null: it takes flows too */
   /* Other solutions that splits of unknown share allow beside `value`, each by column.  */
   size_t other_count; const double *const *other;
 

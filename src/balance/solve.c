@@ -12,6 +12,7 @@
 #include "balance/reconcile.h"
 #include "balance/reduce.h"
 #include "balance/settle.h"
+#include "balance/still.h"
 #include "balance/suggest.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -205,13 +206,24 @@ solve_exact (struct arena *keep, const struct core *core, struct fault *fault)
 {
   struct solution *solution;
   struct idle idle = { core, NULL };
+  bool idle_was;
   if (!idle_look (keep, &idle, fault)) {
     return NULL;
   }
   solution = answer (keep, idle.core, core->network, fault);
-  if (solution && idle.conflict && !solution->conflict) {
+  if (!solution || solution->conflict) {
+    return solution;
+  }
+  idle_was = idle.conflict != NULL;
+  if (!still_find (keep, core->network, core->options, solution, &idle.conflict, fault)) {
+    return NULL;
+  }
+  if (solution->negative_count > 0 && !idle_was) {
+    solution->impossible = idle.conflict;
+  } else if (idle.conflict) {
     solution->status = BALANCE_CONTRADICTORY;
     solution->conflict = idle.conflict;
+    solution->loose = NULL;
   }
   return solution;
 }

@@ -143,12 +143,14 @@ report_verdict (struct text *out, const struct report_style *style,
     "streams":{NAME:{"molar_flow","mass_flow","uncertainty","fractions":{...},
       "fraction_uncertainties":{...}}},"ranges":{NAME:{"least","greatest"}},"determined":[text],
     "undetermined":[text],"suggestions":[[text]],"relations_left":[text],"negative":[NAME],
+    "impossible":[line],
     "practically_undetermined":[{"what","value","moves","unit"}],
     "hangs_on":[{"line","statement","what","least","greatest","unit"}],"settled_by":[[text]],
     "gap":{"around","component","value","unit"}|null,"conflict":[line],"redundant":[line],
-    "suspects":[{"line","statement","needed","unit"}],"adjustments":[{"statement","component",
-    "stated","reconciled","uncertainty","unit","z"}],"global_test":{"chi2","degrees_of_freedom",
-    "critical","passed"}|null,"phrase","head","counts","says":[[label, text]]}
+    "suspects":[{"line","statement","needed","least","greatest","unit"}],
+    "adjustments":[{"statement","component","stated","reconciled","uncertainty","unit","z"}],
+    "global_test":{"chi2","degrees_of_freedom","critical","passed"}|null,"phrase","head","counts",
+    "says":[[label, text]]}
    Flows are in mol/s and kg/s, "uncertainty" that of the molar flow (of the mass flow where all
    flows are by mass); what is open, and the z of a figure that nothing checks, is null.         */
 
@@ -253,6 +255,8 @@ suspects_add (struct text *out, const struct balance_verdict *v)
     text_add_format (out, "%s{\"line\":%zu", i > 0 ? "," : "", suspect->line);
     text_member (out, ",\"statement\":", suspect->statement);
     json_figure (out, ",\"needed\":", suspect->needed);
+    json_figure (out, ",\"least\":", suspect->least);
+    json_figure (out, ",\"greatest\":", suspect->greatest);
     text_member (out, ",\"unit\":", suspect->unit);
     text_add_char (out, '}');
   }
@@ -321,6 +325,7 @@ report_verdict_json (struct text *out, const struct balance_verdict *v)
   text_add_char (out, ']');
   texts_add (out, ",\"relations_left\":", &v->relations_left);
   texts_add (out, ",\"negative\":", &v->negative);
+  texts_add (out, ",\"impossible\":", &v->impossible);
   loose_add (out, v);
   if (v->gap_around != NULL) {
     text_member (out, ",\"gap\":{\"around\":", v->gap_around);

@@ -25,7 +25,12 @@ struct verdict_row { size_t number; const char *cell[4]; struct verdict_row *nex
 
 /* mol/s; the greatest may be infinite.  */
 struct verdict_range { const char *name; double least, greatest; };
-struct verdict_suspect { size_t line; const char *statement; double needed; const char *unit; };
+/* `needed` is NAN where it is a range.  */
+struct verdict_suspect {
+  size_t line;
+  const char *statement, *unit;
+  double needed, least, greatest;
+};
 struct verdict_adjustment {
   const char *statement, *component, *unit;      /* component: null where it is no share */
   double stated, reconciled, uncertainty, z;
@@ -55,7 +60,8 @@ struct balance_verdict {
   bool clash;
 
   size_t range_count; const struct verdict_range *ranges;
-  struct verdict_texts determined, undetermined, relations_left, negative, conflict, redundant;
+  struct verdict_texts determined, undetermined, relations_left, negative, impossible, conflict,
+                       redundant;
   size_t suggestion_count; const struct verdict_texts *suggestions;
   size_t loose_count; const struct verdict_loose *loose;
   size_t hinge_count; const struct verdict_hinge *hinges;

@@ -1,7 +1,9 @@
 """What a balance says of facts that leave nothing, or too little, to stand on.
 
 What hangs on last digits is held against the closed form of a mixer and its partial derivatives,
-in exact fractions."""
+in exact fractions.  Facts that hold only where nothing flows are held against all their subsets,
+looked through one by one with an exact simplex method of the test's own."""
+import itertools
 import random
 import sys
 from fractions import Fraction
@@ -124,8 +126,195 @@ def blend(tap):
     tap.tell([line for line in wrong if line], "a blend of nearly one analysis")
 
 
+# ---- Where nothing flows ----
+
+def feasible(rows):
+    """Is there an x >= 0 with every row (coefficients, sign, right) held, sign "=" or "<"?  Phase
+    one of the simplex method in exact fractions, by Bland's rule."""
+    width = len(rows[0][0])
+    slacks = sum(sign == "<" for _, sign, _ in rows)
+    table, basic, slack = [], [], 0
+    for number, (row, sign, right) in enumerate(rows):
+        line = [Fraction(a) for a in row] + [Fraction(0)] * (slacks + len(rows)) \
+            + [Fraction(right)]
+        if sign == "<":
+            line[width + slack] = Fraction(1)
+            slack += 1
+        if line[-1] < 0:
+            line = [-a for a in line]
+        line[width + slacks + number] = Fraction(1)
+        table.append(line)
+        basic.append(width + slacks + number)
+    cost = [-sum(line[j] for line in table) for j in range(width + slacks)] \
+        + [Fraction(0)] * len(rows) + [-sum(line[-1] for line in table)]
+    while True:
+        enter = next((j for j in range(width + slacks) if cost[j] < 0), None)
+        if enter is None:
+            return cost[-1] == 0
+        leave = min((i for i, line in enumerate(table) if line[enter] > 0),
+                    key=lambda i: (table[i][-1] / table[i][enter], basic[i]))
+        pivot = table[leave][enter]
+        table[leave] = [a / pivot for a in table[leave]]
+        for line in table + [cost]:
+            if line is not table[leave] and line[enter]:
+                by = line[enter]
+                line[:] = [a - by * b for a, b in zip(line, table[leave])]
+        basic[leave] = enter
+
+
+class Chain:
+    """Separators one behind the other, CH4 in CO2, with analyses and shares and no flow."""
+
+    def __init__(self, chance, name):
+        self.name = name
+        self.units = [((0,), (1, 2))]
+        if chance.random() < 0.6:
+            self.units.append(((2,), (3, 4)))
+        if chance.random() < 0.4:
+            self.units.append(((1,), (len(self.units) * 2 + 1, len(self.units) * 2 + 2)))
+        self.streams = 1 + 2 * len(self.units)
+        facts = {}
+        for _ in range(chance.randint(3, len(self.units) * 2 + 1)):
+            if chance.random() < 0.75:
+                s = chance.randrange(self.streams)
+                facts[s, None] = Fraction(chance.randint(20, 980), 10)
+            else:
+                inlets, outlets = chance.choice(self.units)
+                facts[chance.choice(outlets), inlets[0]] = Fraction(chance.randint(50, 950), 10)
+        self.facts = sorted(facts.items(), key=str)
+
+    def lines(self):
+        """The facts as lines."""
+        return ["known CH4 of %s-s%d = %.1f mol%%" % (self.name, s, value) if of is None
+                else "known %s-s%d = %.1f %% of %s-s%d" % (self.name, s, value, self.name, of)
+                for (s, of), value in self.facts]
+
+    def text(self):
+        """The balance."""
+        units = ["  separate u%d: %s = %s" % (
+            n, " + ".join("%s-s%d" % (self.name, s) for s in inlets),
+            " + ".join("%s-s%d" % (self.name, s) for s in outlets))
+            for n, (inlets, outlets) in enumerate(self.units)]
+        return solved(*units, "  components CH4, CO2", *["  " + line for line in self.lines()],
+                      name=self.name)
+
+    def holds(self, which, flowing):
+        """Can the facts WHICH hold, within their digits, with a flow in stream FLOWING?"""
+        width, rows = 2 * self.streams, []
+        for inlets, outlets in self.units:
+            for c in (0, 1):
+                row = [0] * width
+                for s in inlets:
+                    row[2 * s + c] = 1
+                for s in outlets:
+                    row[2 * s + c] = -1
+                rows.append((row, "=", 0))
+        for number in which:
+            (s, of), value = self.facts[number]
+            for side in (1, -1):
+                figure = (value + side * Fraction(5, 100)) / 100
+                row = [0] * width
+                row[2 * s] += side
+                if of is None:
+                    row[2 * s] -= side * figure
+                    row[2 * s + 1] -= side * figure
+                else:
+                    row[2 * s + 1] += side
+                    row[2 * of] -= side * figure
+                    row[2 * of + 1] -= side * figure
+                rows.append((row, "<", 0))
+        row = [0] * width
+        row[2 * flowing] = row[2 * flowing + 1] = 1
+        return feasible(rows + [(row, "=", 1)])
+
+    def smallest(self):
+        """The size of the smallest set that keeps a stream the facts speak of from flowing; 0."""
+        spoken = sorted({t for (s, of), _ in self.facts for t in (s, of) if t is not None})
+        everything = range(len(self.facts))
+        still = [s for s in spoken if not self.holds(everything, s)]
+        for size in range(1, len(self.facts) + 1):
+            for which in itertools.combinations(everything, size):
+                if any(not self.holds(which, s) for s in still):
+                    return size
+        return 0
+
+
+def look_chain(chain, balance):
+    """Clash or not, of least size, told in lines that clash."""
+    size = chain.smallest()
+    clash = balance["status"] == "contradictory"
+    if clash != (size > 0):
+        return ["%s: %s, smallest set %d\n%s" % (chain.name, balance["status"], size,
+                                                 chain.text())]
+    lines = chain.lines()
+    which = [lines.index(line) for line in balance["conflict"]]
+    if clash and (len(which) != size or all(chain.holds(which, s)
+                                            for s in range(chain.streams))):
+        return ["%s: %r, smallest set %d" % (chain.name, balance["conflict"], size)]
+    return []
+
+
+def chains(tap):
+    """Separators at random."""
+    chance = random.Random(SEED)
+    some = [Chain(chance, "c%d" % i) for i in range(240)]
+    balances, wrong = verdicts([c.text() for c in some])
+    clashes = 0
+    for chain in some:
+        if chain.name in balances:
+            wrong += look_chain(chain, balances[chain.name])
+            clashes += balances[chain.name]["status"] == "contradictory"
+    if not 40 < clashes < 200:
+        wrong.append("%d of %d clash: the draw tells nothing" % (clashes, len(some)))
+    tap.tell(wrong, "%d separators without a flow against all sets, seed %d" % (len(some), SEED))
+
+
+PARTED = ("  separate membrane: feed = product + tail", "  components CH4, CO2",
+          "  known product = 70 % of feed", "  known CH4 of feed = 60 mol%",
+          "  known CH4 of product = 97 mol%")
+
+
+def parted(tap):
+    """70 % of a feed of 60 % cannot be of 97 %.  The share could be up to 60/97; the feed from .7 x
+    97 to that and .3, as the tail has none or nothing else; the product from .3/.7 to .6/.7.  With
+    a flow it can be solved on paper, and the same lines are named."""
+    room = [(0, 100 * 60 / 97), (67.9, 97.9), (30 / 0.7, 60 / 0.7)]
+    wrong = []
+    balance = verdicts([solved(*PARTED)])[0]["case"]
+    if balance["conflict"] != [line.strip() for line in PARTED[2:]]:
+        wrong.append("the set is %r" % balance["conflict"])
+    for one, ends in zip(balance["suspects"], room):
+        wrong += [session.off(one[end], value, 1e-6 * max(value, 1), "abs")
+                  for end, value in zip(("least", "greatest"), ends)]
+    if len(balance["suspects"]) != 3 or "nothing flows in feed" not in balance["head"]:
+        wrong.append("%r, %s" % (balance["suspects"], balance["head"]))
+    flowing = verdicts([solved(*PARTED, "  known feed = 100 kmol/h")])[0]["case"]
+    if flowing["status"] != "determined" or flowing["negative"] != ["tail"] \
+            or flowing["impossible"] != balance["conflict"]:
+        wrong.append("%(status)s, %(negative)r, %(impossible)r" % flowing)
+    tap.tell([line for line in wrong if line], "a share and two analyses that do not go together")
+
+
+def closed(tap):
+    """A line that is closed may have an analysis, and all may go one way: no clash."""
+    for name, lines in (("a closed vent", ("  known vent = 0 kmol/h", "  known CH4 of vent = 5 mol%",
+                                           "  known CH4 of feed = 60 mol%")),
+                        ("all to the product", ("  known out = 100 % of feed",
+                                                "  known CH4 of vent = 5 mol%",
+                                                "  known CH4 of feed = 60 mol%")),
+                        ("an idle plant", ("  known feed = 0 kmol/h", "  known CH4 of out = 5 mol%",
+                                           "  known CH4 of vent = 7 mol%"))):
+        balance = verdicts([solved("  separate trap: feed = out + vent", "  components CH4, CO2",
+                                   *lines)])[0]["case"]
+        tap.tell("" if balance["status"] != "contradictory" else "%r" % balance["conflict"],
+                 "no clash: " + name)
+
+
 def main():
     tap = session.Tap()
+    chains(tap)
+    parted(tap)
+    closed(tap)
     mixers(tap)
     blend(tap)
     return tap.finish()

@@ -229,6 +229,7 @@ negative_flows (struct verdict_maker *m)
     result_remark (m->ev->result, MESSAGE_NOTE_NEGATIVE_FLOW, text_list_joined (m->arena, &names),
                    NULL);
   }
+  verdict_impossible (m);
 }
 
 static void

@@ -26,7 +26,10 @@ tell_gap (struct verdict_maker *m, const struct conflict *conflict)
   struct balance_verdict *v = m->verdict;
   v->gap_around = envelope (m, conflict);
   if (!v->gap_around) {
-    v->head = "these facts of one place do not go together";
+    v->head = conflict->still < m->plant->stream_count
+                ? arena_format (m->arena, "these lines hold only if nothing flows in %s",
+                                m->plant->stream[conflict->still].name)
+                : "these facts of one place do not go together";
     return;
   }
   v->gap_component = conflict->component < m->plant->component_count && !m->plant->whole
@@ -38,13 +41,31 @@ tell_gap (struct verdict_maker *m, const struct conflict *conflict)
                           figure_text (m->arena, v->gap), m->unit);
 }
 
+/* What the others leave a fact to say, where that is no one value.  */
+static const char *
+room_text (struct verdict_maker *m, const struct suspect *suspect)
+{
+  const struct plant_fact *f = &m->plant->fact[suspect->fact];
+  const struct fact *fact = &m->plant->network.fact[suspect->fact];
+  const char *part = fact->kind != FACT_COMPOSITION ? ""
+                     : arena_format (m->arena, "%s ", component_text (m->plant,
+                                                                      suspect->component));
+  const char *least = figure_text (m->arena, suspect->least * f->per);
+  if (isinf (suspect->greatest)) {
+    return suspect->least > 0 ? arena_format (m->arena, "%s%s %s or more", part, least, f->unit)
+                              : arena_format (m->arena, "%sanything above 0", part);
+  }
+  return arena_format (m->arena, "%s%s .. %s", part, least,
+                       fact_value_text (m, suspect->fact, suspect->greatest));
+}
+
 static const char *
 needed_text (struct verdict_maker *m, const struct suspect *suspect)
 {
   const struct plant_fact *f = &m->plant->fact[suspect->fact];
   bool gas = m->plant->network.fact[suspect->fact].kind == FACT_COMPOSITION;
   if (isnan (suspect->needed)) {
-    return "not at fault alone";
+    return suspect->plausible ? room_text (m, suspect) : "not at fault alone";
   }
   const char *value = fact_value_text (m, suspect->fact, suspect->needed);
   if (gas) {
@@ -115,9 +136,12 @@ verdict_clash (struct verdict_maker *m)
     const struct suspect *suspect = &conflict->suspects[i];
     const struct plant_fact *f = &m->plant->fact[suspect->fact];
     text_list_add (m->arena, &lines, f->text);
-    if (suspect->plausible && !isnan (suspect->needed)) {
-      suspects[count++] = (struct verdict_suspect) { f->line, f->text, suspect->needed * f->per,
-                                                     f->unit };
+    if (suspect->plausible) {
+      bool one = !isnan (suspect->needed);
+      suspects[count++] = (struct verdict_suspect) {
+        f->line, f->text, f->unit, suspect->needed * f->per,
+        one ? UNSTATED : suspect->least * f->per, one ? UNSTATED : suspect->greatest * f->per
+      };
     }
   }
   /* In the order of the lines.  */
@@ -129,4 +153,22 @@ verdict_clash (struct verdict_maker *m)
   v->conflict = text_list_done (&lines);
   v->suspects = suspects;
   v->suspect_count = count;
+}
+
+/* The lines that no flows above nothing can hold, though some below do.  */
+void
+verdict_impossible (struct verdict_maker *m)
+{
+  const struct conflict *conflict = m->solution->impossible;
+  struct text_list lines = { .at = NULL };
+  for (size_t i = 0; conflict && i < conflict->count; i++) {
+    const struct suspect *suspect = &conflict->suspects[i];
+    const struct plant_fact *f = &m->plant->fact[suspect->fact];
+    const char *line = f->line == 0 ? "" : arena_format (m->arena, "%zu  ", f->line);
+    text_list_add (m->arena, &lines, f->text);
+    verdict_fact (m, i ? "" : "impossible together",
+                  arena_format (m->arena, "%s%s   (the others leave it %s)", line, f->text,
+                                needed_text (m, suspect)));
+  }
+  m->verdict->impossible = text_list_done (&lines);
 }

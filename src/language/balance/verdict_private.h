@@ -44,6 +44,7 @@ const struct verdict_texts *verdict_sets (struct verdict_maker *, size_t suggest
                                           const char *alone, size_t *count);
 void verdict_loose (struct verdict_maker *);             /* verdict_loose.c */
 void verdict_clash (struct verdict_maker *);             /* verdict_clash.c */
+void verdict_impossible (struct verdict_maker *);        /* likewise */
 void verdict_reconciled (struct verdict_maker *);        /* verdict_reconciled.c */
 void verdict_moved (struct verdict_maker *);              /* verdict_moved.c */
 void verdict_round (struct verdict_maker *);              /* verdict_round.c */

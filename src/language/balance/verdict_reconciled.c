@@ -160,8 +160,8 @@ tell_suspects (struct verdict_maker *m)
     const struct plant_fact *f = &m->plant->fact[a->fact];
     if (a->class == FIGURE_REDUNDANT && !isnan (a->implied)
         && fabs (a->z) > z * (1 - 1e-7)) {
-      suspects[count++] = (struct verdict_suspect) { f->line, f->text, a->implied * f->per,
-                                                     f->unit };
+      suspects[count++] = (struct verdict_suspect) { f->line, f->text, f->unit,
+                                                     a->implied * f->per, UNSTATED, UNSTATED };
       verdict_fact (m, count > 1 ? "" : "alone at fault",
                     arena_format (m->arena, "%s would have to be %s (stated %s)",
                                   figure_name (m, a), fact_value_text (m, a->fact, a->implied),

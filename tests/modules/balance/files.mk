@@ -71,6 +71,10 @@ suites += %D%/t_reconcile
   %D%/t_reconcile.c
 %C%_t_reconcile_LDADD = $(with_balance)
 
+suites += %D%/t_simplex
+%C%_t_simplex_SOURCES = %D%/t_simplex.c
+%C%_t_simplex_LDADD = $(with_balance)
+
 suites += %D%/t_solve
 %C%_t_solve_SOURCES = \
   %D%/plant.c \
