@@ -11,6 +11,9 @@
 #include "support/fault.h"
 
 enum { MOST_STEPS = 100, MOST_HALVES = 40 };
+/* Directions of the linear rows from which on all rows together, sparse, are faster than the bent
+   ones within those directions.                                                                 */
+enum { WIDE = 30 };
 
 /* Done when the rows are out by less than this part of the largest flow.  */
 static const double converged = 1e-12;
@@ -70,12 +73,23 @@ length (const struct rows *rows)
   return sqrt (sum);
 }
 
+static bool
+is_wide (const struct core *core)
+{
+  return core->system->freedom >= WIDE;
+}
+
 /* STEP = scale * null * z, with z the shortest least-squares solution of the bent rows.  */
 static void
-find_step (struct arena *arena, const struct core *core, const struct rows *bent, double step[])
+find_step (struct arena *arena, const struct core *core, const struct rows *bent,
+           const double v[], double step[])
 {
   const struct system *system = core->system;
   size_t width = system->freedom;
+  if (is_wide (core)) {
+    system_step (system, bent, v, step);
+    return;
+  }
   double *null = null_space_dense (arena, system->null), *moved;
   double *h = system_project (arena, system, bent, width, null);
   double *z = ARENA_ARRAY (arena, width + 1, double);
@@ -102,13 +116,15 @@ newton (const struct core *core, enum keep keep, double v[])
     int halves = 0;
     done = before <= converged * largest (columns, v);
     if (!done) {
-      find_step (arena, core, &bent, step);
+      find_step (arena, core, &bent, v, step);
       part = longest (core, v, step, keep);
       for (;; part /= 2, halves++) {
         for (size_t j = 0; j < columns; j++) {
           next[j] = v[j] + part * step[j];
         }
-        system_correct (core->system, core->v, next);
+        if (!is_wide (core)) {
+          system_correct (core->system, core->v, next);
+        }
         bent = system_bent (arena, core->system, next);
         if (length (&bent) < before || halves == MOST_HALVES) {
           break;
@@ -173,26 +189,63 @@ find_root (const struct core *core, double v[])
   return false;
 }
 
+/* Where all splits have equal shares.  Where no share follows from the facts that is a solution
+   already.                                                                                      */
+static void
+guess_shares (const struct core *core, double v[])
+{
+  const struct system *system = core->system;
+  double *share = ARENA_ARRAY (core->arena, system->bends + 1, double);
+  double *step = ARENA_ARRAY (core->arena, system->columns + 1, double);
+  struct rows rows;
+  for (size_t i = 0; i < system->bends; i++) {
+    share[i] = 1 / (double) core->network->boundary[system->bend[i].boundary].outlet_count;
+  }
+  rows = system_shared (core->arena, system, share, core->v);
+  system_step (system, &rows, core->v, step);
+  for (size_t j = 0; j < system->columns; j++) {
+    v[j] = core->v[j] + step[j];
+  }
+  system_correct (system, core->v, v);
+}
+
+/* Takes over the solution V and what is open at it.  */
+static void
+settle_at (struct core *core, double *v)
+{
+  core->v = v;
+  core->null = is_wide (core) ? system_narrow_wide (core->arena, core->system, v)
+                              : system_narrow (core->arena, core->system, v);
+  core->freedom = core->null->freedom;
+}
+
 /* Where Newton's steps end from several starts, those at an edge only if there are no others; how
-   many.                                                                                         */
+   many.  The core takes over the first.  Where that is one of many the others are of no use.    */
 static size_t
-find_roots (const struct core *core, double *roots[])
+find_roots (struct core *core, double *roots[])
 {
   double **start = core_generic (core->arena, core, PROGRAM_SEEDS);
-  size_t inner = 0, edge = 0;
-  double *edges[PROGRAM_SEEDS];
-  for (size_t i = 0; i < PROGRAM_SEEDS; i++) {
+  double *edge = NULL;
+  size_t inner = 0;
+  if (is_wide (core)) {
+    guess_shares (core, start[0]);
+  }
+  for (size_t i = 0; i < PROGRAM_SEEDS && (inner == 0 || core->freedom == 0); i++) {
     if (!find_root (core, start[i])) {
       continue;
     }
     if (is_at_edge (core, start[i])) {
-      edges[edge++] = start[i];
+      edge = edge ? edge : start[i];
     } else if (!is_known (core, inner, roots, start[i])) {
       roots[inner++] = start[i];
     }
+    if (inner == 1 && core->v != roots[0]) {
+      settle_at (core, roots[0]);
+    }
   }
-  if (inner == 0 && edge > 0) {
-    roots[inner++] = edges[0];
+  if (inner == 0 && edge) {
+    roots[inner++] = edge;
+    settle_at (core, edge);
   }
   return inner;
 }
@@ -234,16 +287,11 @@ core_bend (struct core *core, struct fault *fault)
 {
   double *roots[PROGRAM_SEEDS];
   size_t count = find_roots (core, roots), independent;
-  struct rows bent;
   if (count == 0) {
     return fault_set (fault, MESSAGE_NOT_CONVERGED, "the shares of the splits", NULL);
   }
-  core->v = roots[0];
-  bent = system_bent (core->arena, core->system, core->v);
-  core->null = system_narrow (core->arena, core->system, core->v);
-  core->freedom = core->null->freedom;
   independent = core->system->freedom - core->freedom;
-  core->surplus += bent.count - independent;
+  core->surplus += system_bent (core->arena, core->system, core->v).count - independent;
   if (core->freedom > 0) {
     look_around (core);
     return true;

@@ -78,7 +78,8 @@ core_generic (struct arena *arena, const struct core *core, size_t count)
     for (size_t c = 0; c < network->components; c++) {
       struct form one = { 1, &terms[c] };
       terms[c] = (struct term) { s * network->components + c, 1 };
-      (void) program_range (program, &one);
+      (void) program_least (program, &one);
+      (void) program_greatest (program, &one);
     }
   }
   for (size_t i = 0; i < count; i++) {

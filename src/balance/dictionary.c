@@ -31,10 +31,10 @@ struct dictionary {
   size_t classes, *class;        /* class: by place in the block; NOWHERE: nothing moves it */
   double *offset, *factor;       /* by place in the block */
   double *direction, *start;     /* by class: what moves it; its variable at v */
-  struct range *range;           /* by class, once it was asked for: */
-  bool *known;
+  double *end[2];                /* by class: its least and greatest; NAN: not asked for yet */
   size_t rows, width, stride;    /* width: nonbasic variables; stride: doubles a row */
   size_t *basic, *nonbasic;
+  size_t *entry;                 /* room for where a row is not zero */
   bool *bounded;                 /* by variable: a flow; false: an extent */
   bool *loose;                   /* by class: an extent that may change with no flow moved */
   double *table;
@@ -65,16 +65,19 @@ static void
 exchange (struct dictionary *d, size_t i, size_t k)
 {
   double *row = row_at (d, i), pivot = row[1 + k];
-  size_t variable = d->basic[i];
+  size_t variable = d->basic[i], entries = 0, *entry = d->entry;
   for (size_t c = 0; c <= d->width; c++) {
     row[c] = c == 1 + k ? 1 / pivot : -row[c] / pivot;
+    if (fabs (row[c]) > 0) {
+      entry[entries++] = c;
+    }
   }
   for (size_t r = 0; r <= d->rows; r++) {
     double *other = row_at (d, r), factor = other[1 + k];
     if (r != i && fabs (factor) > 0) {
       other[1 + k] = 0;
-      for (size_t c = 0; c <= d->width; c++) {
-        other[c] += factor * row[c];
+      for (size_t e = 0; e < entries; e++) {
+        other[entry[e]] += factor * row[entry[e]];
       }
     }
   }
@@ -348,10 +351,15 @@ make_room (struct dictionary *d, size_t freedom)
   d->table = ARENA_ARRAY (arena, (d->classes + 1) * d->stride, double);
   d->basic = ARENA_ARRAY (arena, d->classes + 1, size_t);
   d->nonbasic = ARENA_ARRAY (arena, freedom + 1, size_t);
+  d->entry = ARENA_ARRAY (arena, freedom + 2, size_t);
   d->place = ARENA_ARRAY (arena, variables, size_t);
   d->loose = ARENA_ARRAY (arena, d->classes + 1, bool);
-  d->known = ARENA_ARRAY (arena, d->classes + 1, bool);
-  d->range = ARENA_ARRAY (arena, d->classes + 1, struct range);
+  for (size_t side = 0; side < 2; side++) {
+    d->end[side] = ARENA_ARRAY (arena, d->classes + 1, double);
+    for (size_t c = 0; c < d->classes; c++) {
+      d->end[side][c] = (double) NAN;
+    }
+  }
   for (size_t s = 0; s < DICTIONARY_SEEDS; s++) {
     d->inside[s] = ARENA_ARRAY (arena, d->classes + 1, double);
   }
@@ -481,33 +489,32 @@ aim_at (struct dictionary *d, size_t c, double factor)
   }
 }
 
-/* The least and greatest of what was aimed at, FIXED apart: one way and then the other.  */
-static struct range
-search (struct dictionary *d, double fixed)
+/* The least (SIGN below 0) or greatest of what was aimed at SIGN times, FIXED apart.  */
+static double
+search (struct dictionary *d, double fixed, double sign)
 {
-  double side[2], *goal = row_at (d, d->rows);
-  for (int s = 0; s < 2; s++) {
-    double sign = s == 0 ? -1 : 1;
-    for (size_t k = 0; k <= d->width && s == 1; k++) {
-      goal[k] = -goal[k];
-    }
-    side[s] = climb (d) ? fixed + sign * goal[0] : sign * (double) INFINITY;
-    keep_end (d);
-  }
-  return (struct range) { d->of.unit * side[0], d->of.unit * side[1] };
+  double end = climb (d) ? fixed + sign * row_at (d, d->rows)[0] : sign * (double) INFINITY;
+  keep_end (d);
+  return d->of.unit * end;
+}
+
+static void
+aim_at_nothing (struct dictionary *d)
+{
+  memset (row_at (d, d->rows), 0, d->stride * sizeof (double));
 }
 
 /* Of the variable of a class, over the unit.  */
-static struct range
-class_range (struct dictionary *d, size_t c)
+static double
+class_end (struct dictionary *d, size_t c, double sign)
 {
-  if (!d->known[c]) {
-    memset (row_at (d, d->rows), 0, d->stride * sizeof (double));
-    aim_at (d, c, -1);
-    d->range[c] = search (d, 0);
-    d->known[c] = true;
+  size_t side = sign < 0 ? 0 : 1;
+  if (isnan (d->end[side][c])) {
+    aim_at_nothing (d);
+    aim_at (d, c, sign);
+    d->end[side][c] = search (d, 0, sign);
   }
-  return d->range[c];
+  return d->end[side][c];
 }
 
 /* The place of a term's column in the block.  */
@@ -517,8 +524,8 @@ place_of (const struct dictionary *d, const struct term *term)
   return d->of.space->at[term->column];
 }
 
-struct range
-dictionary_range (struct dictionary *d, const struct form *form)
+double
+dictionary_end (struct dictionary *d, const struct form *form, double sign)
 {
   double fixed = 0, unit = d->of.unit;
   size_t first = place_of (d, &form->terms[0]);
@@ -528,20 +535,19 @@ dictionary_range (struct dictionary *d, const struct form *form)
     fixed += form->terms[t].coefficient
              * (c == NOWHERE ? d->of.v[form->terms[t].column] / unit : d->offset[i]);
     if (c != NOWHERE && d->loose[c]) {
-      return (struct range) { (double) -INFINITY, (double) INFINITY };
+      return sign * (double) INFINITY;
     }
   }
   if (form->count == 1 && d->class[first] != NOWHERE && form->terms[0].coefficient > 0) {
     double by = form->terms[0].coefficient * d->factor[first];
-    struct range range = class_range (d, d->class[first]);
-    return (struct range) { unit * fixed + by * range.least, unit * fixed + by * range.greatest };
+    return unit * fixed + by * class_end (d, d->class[first], sign);
   }
-  memset (row_at (d, d->rows), 0, d->stride * sizeof (double));
+  aim_at_nothing (d);
   for (size_t t = 0; t < form->count; t++) {
     size_t i = place_of (d, &form->terms[t]);
     if (d->class[i] != NOWHERE) {
-      aim_at (d, d->class[i], -form->terms[t].coefficient * d->factor[i]);
+      aim_at (d, d->class[i], sign * form->terms[t].coefficient * d->factor[i]);
     }
   }
-  return search (d, fixed);
+  return search (d, fixed, sign);
 }

@@ -5,7 +5,6 @@
 #include <stdbool.h>
 #include <stddef.h>
 #include "balance/network.h"
-#include "balance/solution.h"
 #include "balance/system.h"
 
 struct arena; struct dictionary; struct null_block; struct null_space;
@@ -22,8 +21,8 @@ struct dictionary_of {
 
 struct dictionary *dictionary_make (struct arena *, const struct dictionary_of *);
 bool dictionary_feasible (const struct dictionary *);
-/* Of a form whose columns all lie in the block.  */
-struct range dictionary_range (struct dictionary *, const struct form *);
+/* The least (SIGN -1) or the greatest value (1) of a form whose columns all lie in the block.  */
+double dictionary_end (struct dictionary *, const struct form *, double sign);
 /* These set the block's columns of V.  SEED is below DICTIONARY_SEEDS.  */
 enum { DICTIONARY_SEEDS = 8 };
 void dictionary_point (const struct dictionary *, double v[]);

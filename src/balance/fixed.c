@@ -124,32 +124,52 @@ has_width (const struct work *work, const struct range *range)
          || range->greatest - range->least > fmax (no_width * work->unit, narrow * end);
 }
 
+/* The least (SIDE 0) or greatest of all that is open.  */
+static void
+find_ends (struct work *work, int side)
+{
+  double (*find) (struct program *, const struct form *) = side == 0 ? program_least
+                                                                     : program_greatest;
+  size_t components = work->network->components;
+  struct term *terms = ARENA_ARRAY (work->core->arena, components, struct term);
+  for (size_t j = 0; j < work->columns && !is_stopped (work); j++) {
+    if (!work->fixed[j]) {
+      terms[0] = (struct term) { j, 1 };
+      *(side == 0 ? &work->range[j].least : &work->range[j].greatest)
+        = find (work->program, &(struct form) { 1, terms });
+    }
+  }
+  for (size_t s = 0; s < work->network->streams && !is_stopped (work); s++) {
+    if (!work->fixed_total[s]) {
+      for (size_t c = 0; c < components; c++) {
+        terms[c] = (struct term) { s * components + c, 1 };
+      }
+      *(side == 0 ? &work->total_range[s].least : &work->total_range[s].greatest)
+        = find (work->program, &(struct form) { components, terms });
+    }
+  }
+}
+
 /* Ranges of all that is open; what has none is fixed.  */
 static void
 find_ranges (struct work *work)
 {
-  size_t components = work->network->components;
-  struct term *terms = ARENA_ARRAY (work->core->arena, components, struct term);
   work->range = ARENA_ARRAY (work->keep, work->columns, struct range);
   work->total_range = ARENA_ARRAY (work->keep, work->network->streams, struct range);
-  for (size_t j = 0; j < work->columns && !is_stopped (work); j++) {
+  for (size_t j = 0; j < work->columns; j++) {
     work->range[j] = (struct range) { work->value[j], work->value[j] };
-    if (!work->fixed[j]) {
-      terms[0] = (struct term) { j, 1 };
-      work->range[j] = program_range (work->program, &(struct form) { 1, terms });
-      work->fixed[j] = !has_width (work, &work->range[j]);
-    }
   }
-  for (size_t s = 0; s < work->network->streams && !is_stopped (work); s++) {
+  for (size_t s = 0; s < work->network->streams; s++) {
     double total = system_total (work->core->system, work->value, s);
     work->total_range[s] = (struct range) { total, total };
-    for (size_t c = 0; c < components; c++) {
-      terms[c] = (struct term) { s * components + c, 1 };
-    }
-    if (!work->fixed_total[s]) {
-      work->total_range[s] = program_range (work->program, &(struct form) { components, terms });
-      work->fixed_total[s] = !has_width (work, &work->total_range[s]);
-    }
+  }
+  find_ends (work, 0);
+  find_ends (work, 1);
+  for (size_t j = 0; j < work->columns; j++) {
+    work->fixed[j] = work->fixed[j] || !has_width (work, &work->range[j]);
+  }
+  for (size_t s = 0; s < work->network->streams; s++) {
+    work->fixed_total[s] = work->fixed_total[s] || !has_width (work, &work->total_range[s]);
   }
 }
 

@@ -70,27 +70,36 @@ is_done (const struct program *program, const struct form *form, size_t t)
   return false;
 }
 
-struct range
-program_range (struct program *program, const struct form *form)
+static double
+form_end (struct program *program, const struct form *form, double sign)
 {
-  struct range sum = { 0, 0 };
+  double sum = 0;
   struct arena *scratch = arena_create_small ();
   struct term *terms = ARENA_ARRAY (scratch, form->count + 1, struct term);
   assert (program->feasible);
   for (size_t t = 0; t < form->count; t++) {
     size_t j = form->terms[t].column, b = program->space->of[j];
     if (b == NOWHERE) {
-      sum.least += form->terms[t].coefficient * program->v[j];
-      sum.greatest += form->terms[t].coefficient * program->v[j];
+      sum += form->terms[t].coefficient * program->v[j];
     } else if (!is_done (program, form, t)) {
       struct form within = form_within (program, form, b, terms);
-      struct range range = dictionary_range (program->dictionary[b], &within);
-      sum.least += range.least;
-      sum.greatest += range.greatest;
+      sum += dictionary_end (program->dictionary[b], &within, sign);
     }
   }
   arena_destroy (scratch);
   return sum;
+}
+
+double
+program_least (struct program *program, const struct form *form)
+{
+  return form_end (program, form, -1);
+}
+
+double
+program_greatest (struct program *program, const struct form *form)
+{
+  return form_end (program, form, 1);
 }
 
 void

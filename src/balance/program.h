@@ -11,7 +11,6 @@
 #include <stdbool.h>
 #include <stddef.h>
 #include "balance/network.h"
-#include "balance/solution.h"
 #include "balance/system.h"
 
 struct arena; struct null_space; struct program;
@@ -23,8 +22,11 @@ struct program *program_make (struct arena *, const struct system *, const doubl
 /* Is there any solution without a negative flow?  If not, `program_point` is the one whose most
    negative flow is least so.                                                                    */
 bool program_feasible (const struct program *);
-/* The least and greatest value of a form (infinite where nothing bounds it).  Only if feasible.  */
-struct range program_range (struct program *, const struct form *);
+/* The least and the greatest value of a form (infinite where nothing bounds it).  Only if feasible.
+   A search begins where the last one ended: all of one kind one after the other are faster than
+   both of each.                                                                                 */
+double program_least (struct program *, const struct form *);
+double program_greatest (struct program *, const struct form *);
 /* Where the last search ended, by column of the network, gone on along what nothing bounds.  */
 void program_point (const struct program *, double v[]);
 

@@ -137,12 +137,17 @@ static double
 column_dot (const struct column *a, const struct column *b, size_t rows)
 {
   size_t from = a->from > b->from ? a->from : b->from, to = a->to < b->to ? a->to : b->to;
-  double sum = 0;
+  double sum[4] = { 0 };                 /* four at once: none waits for the other */
   to = to < rows ? to : rows;
-  for (size_t i = from; i < to; i++) {
-    sum += a->x[i] * b->x[i];
+  for (; from + 4 <= to; from += 4) {
+    for (size_t i = 0; i < 4; i++) {
+      sum[i] += a->x[from + i] * b->x[from + i];
+    }
   }
-  return sum;
+  for (; from < to; from++) {
+    sum[0] += a->x[from] * b->x[from];
+  }
+  return sum[0] + sum[1] + (sum[2] + sum[3]);
 }
 
 static void
@@ -208,8 +213,8 @@ columns_orthonormal (size_t rows, size_t columns, size_t stride, double a[], siz
   while (done < columns && columns_longest (v, done, columns, rows, &best) > tolerance) {
     struct column now = v[best];
     v[best] = v[done];
-    for (size_t k = 0; k < 2 * done; k++) {
-      column_add (&now, -column_dot (&v[k % done], &now, rows), &v[k % done]);
+    for (size_t k = 0; k < done; k++) {          /* for the second time */
+      column_add (&now, -column_dot (&v[k], &now, rows), &v[k]);
     }
     column_scale (&now, 1 / sqrt (column_dot (&now, &now, rows)));
     v[done++] = now;

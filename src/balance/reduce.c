@@ -11,6 +11,9 @@
 /* Rounds of solving for what the rows are still out by.  */
 enum { REFINEMENTS = 3 };
 
+/* Columns left to dense algebra for one of Newton's steps, where a rank in doubt does no harm.  */
+enum { STEP_CORE = 10 };
+
 /* Facts, times the square of how many are to spare, up to which left null vectors are made without
    being asked for.                                                                              */
 static const double modest = 1e6;
@@ -116,25 +119,26 @@ system_left_mixed (struct arena *arena, const struct system *system, size_t coun
   return out;
 }
 
-/* Takes the null space out of W, by column of the rows: of all solutions the shortest.  One with
-   nothing in the columns that are free may be far off, and lose digits.                         */
+/* Takes the null space (or null) out of W, by column of the rows: of all solutions the shortest.
+   One with nothing in the columns that are free may be far off, and lose digits.                */
 static void
-shorten (const struct system *system, struct arena *arena, double w[])
+shorten (const struct system *system, const struct null_space *null, struct arena *arena,
+         double w[])
 {
   const struct reduction *r = system->reduction;
-  if (!system->null || system->freedom == 0) {
+  if (!null || null->freedom == 0) {
     return;
   }
   double *v = ARENA_ARRAY (arena, system->columns + 1, double);
-  double *along = ARENA_ARRAY (arena, system->freedom + 1, double);
+  double *along = ARENA_ARRAY (arena, null->freedom + 1, double);
   for (size_t j = 0; j < r->a.columns; j++) {
     v[r->column[j]] = w[j];
   }
-  null_space_along (system->null, v, along);
-  for (size_t k = 0; k < system->freedom; k++) {
+  null_space_along (null, v, along);
+  for (size_t k = 0; k < null->freedom; k++) {
     along[k] = -along[k];
   }
-  null_space_move (system->null, along, v);
+  null_space_move (null, along, v);
   for (size_t j = 0; j < r->a.columns; j++) {
     w[j] = v[r->column[j]];
   }
@@ -160,7 +164,7 @@ system_solve (const struct system *system, const double right[], double v[])
     for (size_t j = 0; j < r->a.columns; j++) {
       w[j] += step[j];
     }
-    shorten (system, arena, w);
+    shorten (system, system->null, arena, w);
   }
   memset (v, 0, system->columns * sizeof *v);
   for (size_t j = 0; j < r->a.columns; j++) {
@@ -183,7 +187,7 @@ system_correct (const struct system *system, const double at[], double v[])
     }
   }
   elimination_solve (r->elimination, out, step);
-  shorten (system, arena, step);
+  shorten (system, system->null, arena, step);
   for (size_t j = 0; j < r->a.columns; j++) {
     v[r->column[j]] -= step[j] * system->scale[r->column[j]];
   }
@@ -205,12 +209,12 @@ find_particular (struct arena *arena, struct system *system)
   system->particular = v;
 }
 
-/* The null vectors of the rows, by column of the network.  */
+/* The null vectors of an elimination of the rows, by column of the network.  */
 static struct null_vectors
-null_vectors (struct arena *arena, const struct system *system)
+null_vectors (struct arena *arena, const struct reduction *r,
+              const struct elimination *elimination)
 {
-  const struct reduction *r = system->reduction;
-  size_t n = r->a.columns, d = system->freedom, count = 0, room = 4 * n + 64;
+  size_t n = r->a.columns, d = n - elimination_rank (elimination), count = 0, room = 4 * n + 64;
   size_t *start = ARENA_ARRAY (arena, d + 1, size_t), *column = NULL;
   double *x = ARENA_ARRAY (arena, n + 1, double), *value = NULL;
   column = ARENA_ARRAY (arena, room, size_t);
@@ -225,7 +229,7 @@ null_vectors (struct arena *arena, const struct system *system)
       value = values;
       room *= 2;
     }
-    elimination_null (r->elimination, k, x);
+    elimination_null (elimination, k, x);
     for (size_t j = 0; j < n; j++) {
       if (fabs (x[j]) > 0) {
         column[count] = r->column[j];
@@ -241,7 +245,8 @@ void
 system_open (struct arena *arena, struct system *system)
 {
   struct arena *scratch = arena_create ();
-  struct null_vectors vectors = null_vectors (scratch, system);
+  struct null_vectors vectors = null_vectors (scratch, system->reduction,
+                                              system->reduction->elimination);
   system->null = null_space_make (arena, system->columns, &vectors);
   arena_destroy (scratch);
   if (system->freedom > 0) {
@@ -334,6 +339,89 @@ system_narrow (struct arena *arena, const struct system *system, const double v[
   }
   null = matrix_product (work, system->columns, width, freedom, null, inner);
   struct null_space *narrow = null_space_of (arena, system->columns, freedom, freedom, null);
+  arena_destroy (work);
+  return narrow;
+}
+
+/* ---- Rows and bends together ---- */
+
+/* The scaled rows of SYSTEM with those of the bends behind them, each of these made 1 in its
+   largest entry; what they are short of at V in SHORT_OF (null: not asked for).                 */
+static struct sparse
+rows_with_bends (struct arena *arena, const struct system *system, const struct rows *bent,
+                 const double v[], double short_of[])
+{
+  const struct sparse *a = &system->reduction->a;
+  size_t m = a->rows, entries = a->start[m];
+  size_t *start = ARENA_ARRAY (arena, m + bent->count + 1, size_t);
+  size_t *column = ARENA_ARRAY (arena, entries + bent->start[bent->count] + 1, size_t);
+  size_t *place = ARENA_ARRAY (arena, system->columns + 1, size_t);
+  double *value = ARENA_ARRAY (arena, entries + bent->start[bent->count] + 1, double);
+  memcpy (start, a->start, (m + 1) * sizeof *start);
+  memcpy (column, a->column, entries * sizeof *column);
+  memcpy (value, a->value, entries * sizeof *value);
+  for (size_t j = 0; j < a->columns; j++) {
+    place[system->reduction->column[j]] = j;
+  }
+  for (size_t i = 0; i < m && short_of; i++) {
+    short_of[i] = -rows_residual (&system->rows, i, v) * system->row_scale[i];
+  }
+  for (size_t i = 0; i < bent->count; i++) {
+    double most = 0;
+    start[m + i + 1] = entries + bent->start[i + 1];
+    for (size_t e = bent->start[i]; e < bent->start[i + 1]; e++) {
+      column[entries + e] = place[bent->column[e]];
+      value[entries + e] = bent->coefficient[e] * system->scale[bent->column[e]];
+      most = fmax (most, fabs (value[entries + e]));
+    }
+    for (size_t e = bent->start[i]; e < bent->start[i + 1]; e++) {
+      value[entries + e] /= most > 0 ? most : 1;
+    }
+    if (short_of) {
+      short_of[m + i] = bent->right[i] / (most > 0 ? most : 1);
+    }
+  }
+  return (struct sparse) { m + bent->count, a->columns, start, column, value };
+}
+
+/* What an elimination of all rows leaves open.  */
+static struct null_space *
+null_of (struct arena *arena, const struct system *system,
+         const struct elimination *elimination)
+{
+  struct arena *scratch = arena_create ();
+  struct null_vectors vectors = null_vectors (scratch, system->reduction, elimination);
+  struct null_space *null = null_space_make (arena, system->columns, &vectors);
+  arena_destroy (scratch);
+  return null;
+}
+
+void
+system_step (const struct system *system, const struct rows *bent, const double v[], double d[])
+{
+  const struct reduction *r = system->reduction;
+  struct arena *arena = arena_create ();
+  double *short_of = ARENA_ARRAY (arena, r->a.rows + bent->count + 1, double);
+  double *w = ARENA_ARRAY (arena, r->a.columns + 1, double);
+  struct sparse rows = rows_with_bends (arena, system, bent, v, short_of);
+  const struct elimination *elimination = elimination_make (arena, &rows, STEP_CORE);
+  elimination_solve (elimination, short_of, w);
+  shorten (system, null_of (arena, system, elimination), arena, w);
+  memset (d, 0, system->columns * sizeof *d);
+  for (size_t j = 0; j < r->a.columns; j++) {
+    d[r->column[j]] = w[j] * system->scale[r->column[j]];
+  }
+  arena_destroy (arena);
+}
+
+struct null_space *
+system_narrow_wide (struct arena *arena, const struct system *system, const double v[])
+{
+  struct arena *work = arena_create ();
+  struct rows bent = system_bent (work, system, v);
+  struct sparse rows = rows_with_bends (work, system, &bent, v, NULL);
+  struct null_space *narrow = null_of (arena, system,
+                                       elimination_make (work, &rows, REDUCE_CORE));
   arena_destroy (work);
   return narrow;
 }

@@ -37,5 +37,10 @@ double *system_project (struct arena *, const struct system *, const struct rows
                         const double base[]);
 /* The null space within the null space of SYSTEM which the bends leave at V.  */
 struct null_space *system_narrow (struct arena *, const struct system *, const double v[]);
+/* The same for a null space that is wide, and one of Newton's steps, from the rows of SYSTEM and
+   BENT (those of the bends at V) together: D, as short as can be, makes up for what they are short
+   of at V.                                                                                      */
+struct null_space *system_narrow_wide (struct arena *, const struct system *, const double v[]);
+void system_step (const struct system *, const struct rows *bent, const double v[], double d[]);
 
 #endif

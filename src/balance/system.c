@@ -464,6 +464,28 @@ system_bent (struct arena *arena, const struct system *system, const double v[])
   return builder.rows;
 }
 
+struct rows
+system_shared (struct arena *arena, const struct system *system, const double share[],
+               const double v[])
+{
+  const struct network *network = system->network;
+  struct builder builder;
+  builder_init (&builder, arena, system->columns, system->absence.absent);
+  for (size_t i = 0; i < system->bends; i++) {
+    const struct bend *bend = &system->bend[i];
+    for (size_t c = 0; c < network->components; c++) {
+      size_t in = column_of (network, bend->inlet, c), out = column_of (network, bend->outlet, c);
+      builder_add (&builder, out, 1);
+      builder_add (&builder, in, -share[i]);
+      if (builder.touched > 0) {
+        builder_close (&builder, (struct row) { ROW_SPLIT, bend->boundary, c },
+                       share[i] * v[in] - v[out]);
+      }
+    }
+  }
+  return builder.rows;
+}
+
 double
 rows_residual (const struct rows *rows, size_t i, const double v[])
 {

@@ -83,6 +83,10 @@ struct system *system_make (struct arena *, const struct network *, const bool t
    components whose fraction is not known (one follows from the rest).                           */
 struct rows system_bent (struct arena *, const struct system *, const double v[]);
 
+/* The rows that bends would have with the shares SHARE, by bend; `right` as above.  */
+struct rows system_shared (struct arena *, const struct system *, const double share[],
+                           const double v[]);
+
 /* Row I at V less its right side.  */
 double rows_residual (const struct rows *, size_t i, const double v[]);
 

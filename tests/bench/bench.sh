@@ -131,6 +131,20 @@ network "" "below 500 ms" 333
 network "" "below 5000 ms" 3333
 network ", short by 3" "" 333 3
 network " that clashes" "" 333 0 3 0.01
+network ", 20 shares unknown" "below 100 ms" 33 0 0 0 20
+network ", 20 shares from fractions" "" 33 0 0 0 20 20
+
+# Both shares of every split, which add up to 100.2 %: they agree within their digits.
+splits=150
+awk -v n="$splits" 'BEGIN {
+  print "balance line"
+  for (i = 1; i <= n; i++)
+    print "split t" i ": s" i - 1 " = s" i " + v" i "\nknown s" i " = 97 % of s" i - 1 "\nknown v" i \
+      " = 3.2 % of s" i - 1
+  print "known s0 = 850 kmol/h of (CH4 60, CO2 30, N2 10 mol%)\nend\nsolve line" }' > "$work/splits"
+# shellcheck disable=SC2046  # three words
+set -- $("$measure" 5 "$work/splits" "$program")
+row "$splits splits typed coarsely" "$1 ms, $3 kB" "below 500 ms"
 
 # typed WAY UNITS AIM: a metered line of units, read, reconciled and printed
 typed() {

@@ -1,6 +1,6 @@
 /* How long a network takes to solve, by its size:
 
-       networks RINGS [UNKNOWN-RECOVERIES [SHARES-TWICE [WRONG]]]
+       networks RINGS [UNKNOWN-RECOVERIES [SHARES-TWICE [WRONG [UNKNOWN-SHARES [TOLD]]]]]
 
    Prints units, unknowns, least wall time of three runs in ms, most resident memory in kB, and the
    status.  The plant is that of tests/modules/balance/chain.h.                                  */
@@ -37,6 +37,8 @@ main (int argc, char *argv[])
   chain.unknown_recoveries = argc > 2 ? strtoul (argv[2], NULL, 10) : 0;
   chain.shares_twice = argc > 3 ? strtoul (argv[3], NULL, 10) : 0;
   chain.wrong = argc > 4 ? strtod (argv[4], NULL) : 0;
+  chain.unknown_shares = argc > 5 ? strtoul (argv[5], NULL, 10) : 0;
+  chain.told_fractions = argc > 6 ? strtoul (argv[6], NULL, 10) : 0;
   for (int run = 0; run < 3; run++) {
     struct arena *arena = arena_create ();
     const struct network *network = chain_make (arena, &chain);

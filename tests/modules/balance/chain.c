@@ -13,7 +13,29 @@ struct work {
   struct boundary *boundary;
   struct fact *fact;
   const double *x;
+  double top[C];                 /* what enters the next ring from before */
 };
+
+static double
+recovery (size_t c)
+{
+  return 0.3 + 0.1 * (double) c;
+}
+
+/* What enters the separator of a ring is m = f / (1 - 0.6 (1 - r)); goes on to the next ring, and
+   gives back the fraction of the first component in the rest of this one.                       */
+static double
+go_through (struct work *work, double own)
+{
+  double first = 0, rest = 0;
+  for (size_t c = 0; c < C; c++) {
+    double r = recovery (c), in = (work->top[c] + own * work->x[c]) / (1 - 0.6 * (1 - r));
+    first = c == 0 ? (1 - r) * in : first;
+    rest += (1 - r) * in;
+    work->top[c] = r * in;
+  }
+  return first / rest;
+}
 
 static void
 fact (struct work *work, struct fact fact)
@@ -51,6 +73,7 @@ ring (struct work *work, size_t m, size_t from)
 {
   const struct chain *chain = work->chain;
   size_t in = 1 + CHAIN_STREAMS * m, top = in + 1, rest = in + 2, back = in + 3, purge = in + 4;
+  double own = 10 + (double) (m % 7);
   boundary (work, BOUNDARY_MIX, 3, 1, (const size_t[]) { from, back, in + 5, in });
   boundary (work, BOUNDARY_SEPARATE, 1, 2, (const size_t[]) { in, top, rest });
   boundary (work, BOUNDARY_SPLIT, 1, 2, (const size_t[]) { rest, back, purge });
@@ -59,7 +82,7 @@ ring (struct work *work, size_t m, size_t from)
     terms[0] = (struct term) { top * C + c, 1 };
     terms[1] = (struct term) { in * C + c, 1 };
     fact (work, (struct fact) { .kind = FACT_RATIO, .relation = true, .left = { 1, terms },
-                                .right = { 1, terms + 1 }, .value = 0.3 + 0.1 * (double) c });
+                                .right = { 1, terms + 1 }, .value = recovery (c) });
   }
   if (m >= chain->unknown_shares) {
     fact (work, (struct fact) { .kind = FACT_SHARE, .relation = true, .stream = back, .of = rest,
@@ -69,7 +92,16 @@ ring (struct work *work, size_t m, size_t from)
     fact (work, (struct fact) { .kind = FACT_SHARE, .relation = true, .stream = purge,
                                 .of = rest, .value = 0.4 + chain->wrong });
   }
-  feed (work, in + 5, 10 + (double) (m % 7));
+  double x = go_through (work, own);
+  if (m < chain->told_fractions) {
+    struct term *terms = ARENA_ARRAY (work->arena, C, struct term);
+    for (size_t c = 0; c < C; c++) {
+      terms[c] = (struct term) { rest * C + c, 1 };
+    }
+    fact (work, (struct fact) { .kind = FACT_RATIO, .left = { 1, terms }, .right = { C, terms },
+                                .value = x });
+  }
+  feed (work, in + 5, own);
 }
 
 const struct network *
@@ -80,10 +112,11 @@ chain_make (struct arena *arena, const struct chain *chain)
   double *x = ARENA_ARRAY (arena, C, double);
   for (size_t c = 0; c < C; c++) {
     x[c] = (double) (c + 1) / 21;
+    work.top[c] = 100 * x[c];
   }
   work.x = x;
   work.boundary = ARENA_ARRAY (arena, CHAIN_BOUNDARIES * chain->rings, struct boundary);
-  work.fact = ARENA_ARRAY (arena, (C + 4) * chain->rings + 2, struct fact);
+  work.fact = ARENA_ARRAY (arena, (C + 5) * chain->rings + 2, struct fact);
   *network = (struct network) { .components = C, .streams = 1 + CHAIN_STREAMS * chain->rings,
                                 .boundary = work.boundary, .fact = work.fact, .water = C };
   feed (&work, 0, 100);

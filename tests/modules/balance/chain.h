@@ -18,6 +18,8 @@ struct chain {
   size_t rings;
   size_t unknown_recoveries;     /* of the ring in the middle, left out of the facts */
   size_t unknown_shares;         /* rings whose share is left out */
+  size_t told_fractions;         /* rings that have the fraction of the first component in their
+                                    rest as well, as it is with the shares given */
   size_t shares_twice;           /* rings that have the share of the purge as well */
   double wrong;                  /* which is more by so much */
 };

@@ -22,30 +22,74 @@ solve (struct arena *arena, const struct chain *chain)
   return solution;
 }
 
-/* 300 units: every ring by its closed form, m = f / (1 - 0.6 (1 - r)), one after the other.  */
+/* Every ring by its closed form, m = f / (1 - 0.6 (1 - r)), one after the other.  */
+static void
+follow (const struct chain *chain, const double value[], double within)
+{
+  double feed[CHAIN_COMPONENTS];
+  for (size_t c = 0; c < CHAIN_COMPONENTS; c++) {
+    feed[c] = 100 * (double) (c + 1) / 21;
+  }
+  for (size_t m = 0; m < chain->rings; m++) {
+    for (size_t c = 0; c < CHAIN_COMPONENTS; c++) {
+      double r = 0.3 + 0.1 * (double) c, own = 10 + (double) (m % 7);
+      double in = (feed[c] + own * (double) (c + 1) / 21) / (1 - 0.6 * (1 - r));
+      test_about ("ring %zu, component %zu", m, c);
+      NEAR (value[(1 + CHAIN_STREAMS * m) * CHAIN_COMPONENTS + c], in, within);
+      feed[c] = r * in;
+    }
+  }
+}
+
+/* 300 units.  */
 static void
 determined (void)
 {
   static const struct chain chain = { .rings = 100 };
   struct arena *arena = arena_create ();
   const struct solution *s = solve (arena, &chain);
-  double feed[CHAIN_COMPONENTS];
   NEED (s);
   SAME_INT (s->status, BALANCE_DETERMINED);
   SAME_INT (s->count.variables, 601 * 6);
   CHECK (s->mismatch < 1e-13);
-  for (size_t c = 0; c < CHAIN_COMPONENTS; c++) {
-    feed[c] = 100 * (double) (c + 1) / 21;
+  follow (&chain, s->value, 1e-12);
+  arena_destroy (arena);
+}
+
+/* Shares that follow from a fraction each, few and many.  */
+static void
+shares_from_fractions (void)
+{
+  static const struct chain chains[] = {
+    { .rings = 12, .unknown_shares = 2, .told_fractions = 2 },
+    { .rings = 33, .unknown_shares = 20, .told_fractions = 20 }
+  };
+  for (size_t n = 0; n < 2; n++) {
+    struct arena *arena = arena_create ();
+    const struct solution *s = solve (arena, &chains[n]);
+    test_about ("chain %zu", n);
+    NEED (s);
+    SAME_INT (s->status, BALANCE_DETERMINED);
+    SAME_INT (s->count.missing, 0);
+    CHECK (s->mismatch < 1e-12);
+    follow (&chains[n], s->value, 1e-8);
+    arena_destroy (arena);
   }
-  for (size_t m = 0; m < chain.rings; m++) {
-    for (size_t c = 0; c < CHAIN_COMPONENTS; c++) {
-      double r = 0.3 + 0.1 * (double) c, own = 10 + (double) (m % 7);
-      double in = (feed[c] + own * (double) (c + 1) / 21) / (1 - 0.6 * (1 - r));
-      test_about ("ring %zu, component %zu", m, c);
-      NEAR (s->value[(1 + CHAIN_STREAMS * m) * CHAIN_COMPONENTS + c], in, 1e-12);
-      feed[c] = r * in;
-    }
-  }
+}
+
+/* Twenty shares that nothing tells: each is one more figure, and all solutions are sound.  */
+static void
+shares_unknown (void)
+{
+  static const struct chain chain = { .rings = 33, .unknown_shares = 20 };
+  struct arena *arena = arena_create ();
+  const struct solution *s = solve (arena, &chain);
+  NEED (s);
+  SAME_INT (s->status, BALANCE_UNDERDETERMINED);
+  SAME_INT (s->count.missing, 20);
+  SAME_INT (s->negative_count, 0);
+  CHECK (s->mismatch < 1e-12);
+  CHECK (!s->fixed_total[1]);
   arena_destroy (arena);
 }
 
@@ -133,6 +177,8 @@ one_pipe (void)
 
 static const struct test_case cases[] = {
   { "300 units have their closed form", determined },
+  { "shares follow from fractions", shares_from_fractions },
+  { "twenty shares are unknown", shares_unknown },
   { "what is open far off leaves the rest fixed", short_of_some },
   { "a clash is found among thousands of rows", clashes },
   { "hundreds of meters in one pipe have a mean", one_pipe },
