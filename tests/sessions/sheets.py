@@ -131,8 +131,24 @@ def left_open(tap):
         tap.tell([] if said == taken else [str(answer)], "an open volume on a sheet, " + mass)
 
 
+def weights(tap):
+    """What was taken, with the most it moves any figure: 519.67/527.67 - 1, 1/1.01325 - 1, and for
+    a stream nothing where figure and stream move alike.  By hand, of ideal gases."""
+    before = "set gas model ideal\n"
+    lines = "sheet one of N2; 9 scfm; 250 L/min at 20 degC, 0 bar(g); end\ncheck one\n"
+    taken = session.answers(before + lines)[-1]["taken"]
+    tap.tell([] if "scf at 60 degF, 14.696 psia (at 68 degF: -1.5 %)" in taken
+             and "barometer 1.01325 bar (at 1 bar: -1.3 %)" in taken else taken,
+             "what a sheet took says what its usual alternative moves")
+    lines = "stream s = 9 scfm of N2\nsheet one of s; 9 scfm; 17 kg/h; end\ncheck one\n"
+    taken = session.answers(before + lines)[-1]["taken"]
+    tap.tell([] if any("68 degF: +1.5 %" in one for one in taken) else taken,
+             "of a stream the mass moves against it, and the volume does not")
+
+
 def main():
     tap = session.Tap()
+    weights(tap)
     left_open(tap)
     fixed(tap)
     lasting(tap)

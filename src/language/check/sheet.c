@@ -172,6 +172,36 @@ sheet_holds (struct evaluation *ev, const struct statement *sheet)
   return done;
 }
 
+static double
+claimed (const struct evaluation *ev, const struct value *v)
+{
+  return v->kind == VALUE_STREAM ? stream_dry_moles (&v->stream, ev->session->water)
+         : v->kind == VALUE_QUANTITY ? v->si : UNSTATED;
+}
+
+bool
+sheet_figures (struct evaluation *ev, const void *with, struct figures *figures)
+{
+  const struct statement *sheet = with;
+  struct line *lines;
+  struct value whole, v;
+  struct settings filled = *ev->settings;
+  const struct settings *settings = ev->settings;
+  const size_t n = lines_of (ev->arena, sheet, &lines);
+  bool done = evaluate (ev, sheet->value, NULL, &whole);
+  const double base = done && whole.kind == VALUE_STREAM ? claimed (ev, &whole) : 1;
+  fill_open (&filled);
+  ev->settings = &filled;
+  *figures = (struct figures) { ARENA_ARRAY (ev->arena, n, struct figure), 0, n };
+  for (size_t i = 0; done && i < n; i++) {
+    done = evaluate (ev, lines[i].node, NULL, &v);
+    figures->at[figures->count++].value
+      = done ? claimed (ev, &v) / (lines[i].sort == SORT_FLOW ? base : 1) : UNSTATED;
+  }
+  ev->settings = settings;
+  return done;
+}
+
 /* ---- One set of readings ---- */
 
 /* Moles of a flow, or a property's claim over what is computed.  */

@@ -57,17 +57,23 @@ verdict (struct check *check, const struct readings *readings, struct check_verd
   return true;
 }
 
-/* Everything a sheet's figures took for granted, without effects: they are of many figures.  */
+/* Everything a sheet's figures took for granted, with the most it moves any of them.  */
 static void
 tell_sheet (struct session *session, struct definition *d, const struct check_verdict *v,
             struct result *result)
 {
-  for (size_t i = 0; i < d->assumption_count; i++) {
-    const struct assumption *a = &d->assumptions[i];
-    struct remark *r = result_remark (result, a->kind, a->fact[0], a->fact[1]);
-    r->fact[2] = a->fact[2];
-    r->fact[3] = a->fact[3];
+  struct evaluation ev;
+  struct fault unheard;
+  struct figures figures = { NULL, 0, 0 };
+  fault_init (&unheard, result->arena);
+  evaluation_init (&ev, session, result, &unheard);
+  ev.describe = false;
+  if (!sheet_figures (&ev, d->statement, &figures)) {
+    figures.count = 0;                     /* said without effects */
   }
+  ev.assumptions = d->assumptions;
+  ev.assumption_count = d->assumption_count;
+  retold_taken (&ev, &(struct retold) { sheet_figures, d->statement }, &figures);
   definition_tell (session, d, false, result);
   if (v->open_at) {
     result_remark (result, MESSAGE_TAKEN_OPEN_VOLUME, "the volume", v->open_at);
