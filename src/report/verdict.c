@@ -150,7 +150,7 @@ report_verdict (struct text *out, const struct report_style *style,
     "suspects":[{"line","statement","needed","least","greatest","unit"}],
     "adjustments":[{"statement","component","stated","reconciled","uncertainty","unit","z"}],
     "global_test":{"chi2","degrees_of_freedom","critical","passed"}|null,"phrase","head","counts",
-    "says":[[label, text]]}
+    "says":[[label, text]],"lists":[{"what","names":[text]}]}
    Flows are in mol/s and kg/s, "uncertainty" that of the molar flow (of the mass flow where all
    flows are by mass); what is open, and the z of a figure that nothing checks, is null.         */
 
@@ -308,6 +308,12 @@ facts_json (struct text *out, const struct balance_verdict *v)
     text_add_char (out, ',');
     json_string (out, row->cell[1]);
     text_add_char (out, ']');
+  }
+  text_add (out, "],\"lists\":[");
+  for (const struct verdict_list *list = v->lists; list != NULL; list = list->next) {
+    text_member (out, list != v->lists ? ",{\"what\":" : "{\"what\":", list->what);
+    texts_add (out, ",\"names\":", &list->names);
+    text_add_char (out, '}');
   }
   text_add_char (out, ']');
 }

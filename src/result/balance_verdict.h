@@ -40,6 +40,8 @@ struct verdict_adjustment {
 struct verdict_loose { const char *what, *unit; double value, moves; };
 struct verdict_hinge { size_t line; const char *statement, *what, *unit; double least, greatest; };
 struct verdict_texts { size_t count; const char *const *at; };
+/* All of what a sentence names only the first of.  */
+struct verdict_list { const char *what; struct verdict_texts names; struct verdict_list *next; };
 
 struct balance_verdict {
   const char *name;
@@ -58,6 +60,7 @@ struct balance_verdict {
   struct verdict_row *rows;                      /* of a clash or of what was reconciled */
   const char *heading[4];                        /* of `rows` */
   bool clash;
+  struct verdict_list *lists;
 
   size_t range_count; const struct verdict_range *ranges;
   struct verdict_texts determined, undetermined, relations_left, negative, impossible, conflict,

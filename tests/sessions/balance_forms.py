@@ -304,6 +304,37 @@ def spreads(tap):
              "a table too wide for a line is parted")
 
 
+def long_lists(tap):
+    """Of a long list the first names and how many more there are; all of them in JSON and `show`.
+
+    One balance of 21 metered flows has one figure to spare, so that all have the same test value:
+    sqrt(chi2).  Of 21 flows that nothing but that balance ties, one at a time is any that closes
+    it."""
+    names = ["feed"] + ["line-%d" % i for i in range(1, 21)]
+    lines = ["separate manifold: feed = " + " + ".join(names[1:])]
+    meters = ["known feed = 205 +/- 1 kmol/h"] + ["known %s = 10 +/- 1 kmol/h" % n for n in names[1:]]
+    text = block(*lines, *meters, solve="solve case\nshow case")
+    said = " ".join(session.run(text, "text")[1].split())
+    first = ", ".join(names[:8])
+    wanted = ("no single reading stands out; %s and 13 more tie" % first,
+              "stand out alike: " + ", ".join(names))
+    tap.tell([line for line in wanted if line not in said], "a long tie is cut, and shown whole")
+    lists = session.answers(text)[0]["balance"]["lists"]
+    tap.tell([] if lists == [{"what": "stand out alike", "names": names}] else [lists],
+             "a long tie is whole in JSON")
+    short = block(*lines, *meters[2:], solve="solve case")
+    answer = session.answers(short)[0]["balance"]
+    wrong = [] if any(["flow of feed", "flow of line-1"] == one["names"][:2] or one["what"] ==
+                      "fixed all the same" and one["names"] == names[2:]
+                      for one in answer["lists"]) else [answer["lists"]]
+    tap.tell(wrong, "what is fixed is cut, and whole in JSON")
+    nine = block("separate manifold: feed = " + " + ".join(names[1:9]),
+                 "known feed = 85 +/- 1 kmol/h", *meters[1:9], solve="solve case")
+    said = " ".join(session.run(nine, "text")[1].split())
+    tap.tell([] if ", ".join(names[:9]) + " tie" in said else [said],
+             "nine names are not cut to eight and one more")
+
+
 def main():
     tap = session.Tap()
     forms(tap)
@@ -315,6 +346,7 @@ def main():
     cards(tap)
     cautions(tap)
     spreads(tap)
+    long_lists(tap)
     return tap.finish()
 
 

@@ -26,14 +26,42 @@ text_list_done (const struct text_list *list)
   return (struct verdict_texts) { list->count, list->at };
 }
 
-const char *
-text_list_joined (struct arena *arena, const struct text_list *list)
+size_t
+verdict_named (struct verdict_maker *m, const char *what, const struct text_list *list)
 {
-  const char *joined = list->count ? list->at[0] : "";
-  for (size_t i = 1; i < list->count; i++) {
-    joined = arena_format (arena, "%s, %s", joined, list->at[i]);
+  if (list->count <= VERDICT_NAMED + 1) {
+    return list->count;
   }
-  return joined;
+  struct verdict_list *all = ARENA_NEW (m->arena, struct verdict_list);
+  all->what = what;
+  all->names = text_list_done (list);
+  *m->last_list = all;
+  m->last_list = &all->next;
+  return VERDICT_NAMED;
+}
+
+const char *
+verdict_joined (struct verdict_maker *m, const char *what, const struct text_list *list)
+{
+  size_t count = verdict_named (m, what, list);
+  const char *joined = count ? list->at[0] : "";
+  for (size_t i = 1; i < count; i++) {
+    joined = arena_format (m->arena, "%s, %s", joined, list->at[i]);
+  }
+  return count == list->count ? joined : arena_format (m->arena, "%s and %zu more", joined,
+                                                       list->count - count);
+}
+
+void
+verdict_facts (struct verdict_maker *m, const char *label, const struct text_list *list)
+{
+  size_t count = verdict_named (m, label, list);
+  for (size_t i = 0; i < count; i++) {
+    verdict_fact (m, i ? "" : label, list->at[i]);
+  }
+  if (count < list->count) {
+    verdict_fact (m, "", arena_format (m->arena, "and %zu more", list->count - count));
+  }
 }
 
 void
@@ -207,9 +235,7 @@ redundant_facts (struct verdict_maker *m)
   if (m->solution->status != BALANCE_REDUNDANT) {
     return;
   }
-  for (size_t i = 0; i < shown.count; i++) {
-    verdict_fact (m, i ? "" : "the others imply each", shown.at[i]);
-  }
+  verdict_facts (m, "the others imply each", &shown);
 }
 
 static void
@@ -225,9 +251,9 @@ negative_flows (struct verdict_maker *m)
     }
   }
   m->verdict->negative = text_list_done (&names);
+  const char *joined = verdict_joined (m, "negative", &names);
   if (names.count > 0 && m->ev->result && m->solution->status != BALANCE_CONTRADICTORY) {
-    result_remark (m->ev->result, MESSAGE_NOTE_NEGATIVE_FLOW, text_list_joined (m->arena, &names),
-                   NULL);
+    result_remark (m->ev->result, MESSAGE_NOTE_NEGATIVE_FLOW, joined, NULL);
   }
   verdict_impossible (m);
 }
@@ -262,7 +288,8 @@ plant_verdict (struct evaluation *ev, const struct plant *plant, const struct ta
   struct balance_verdict *verdict = ARENA_NEW (ev->arena, struct balance_verdict);
   struct verdict_maker m = { .ev = ev, .arena = ev->arena, .plant = plant,
                              .solution = plant->solution, .verdict = verdict,
-                             .last_fact = &verdict->facts, .last_row = &verdict->rows };
+                             .last_fact = &verdict->facts, .last_row = &verdict->rows,
+                             .last_list = &verdict->lists };
   verdict->name = plant->name;
   verdict->gap = verdict->chi2 = verdict->critical = UNSTATED;
   m.per = plant_unit (ev, plant, &m.unit);

@@ -39,19 +39,17 @@ tell_ends (struct verdict_maker *m, const struct loose *loose)
                     arena_format (m->arena, "%s: on paper %s %s, give or take %s", name,
                                   figure_text (m->arena, value), unit,
                                   rough_text (m->arena, moves)));
-      text_list_add (m->arena, &names, name);
     }
+    text_list_add (m->arena, &names, name);
   }
   m->verdict->loose = list;
   m->verdict->loose_count = loose->count;
   if (loose->count > TOLD_MOST) {
-    const char *more = arena_format (m->arena, "%zu more", loose->count - TOLD_MOST);
-    verdict_fact (m, "", arena_format (m->arena, "and %s", more));
-    text_list_add (m->arena, &names, more);
+    verdict_fact (m, "", arena_format (m->arena, "and %zu more", loose->count - TOLD_MOST));
   }
+  const char *joined = verdict_joined (m, "hang on last digits", &names);
   if (m->ev->result) {
-    result_remark (m->ev->result, MESSAGE_NOTE_LAST_DIGITS, text_list_joined (m->arena, &names),
-                   NULL);
+    result_remark (m->ev->result, MESSAGE_NOTE_LAST_DIGITS, joined, NULL);
   }
 }
 

@@ -44,12 +44,12 @@ what_is_fixed (struct verdict_maker *m)
   m->verdict->determined = text_list_done (&json);
   m->verdict->undetermined = text_list_done (&open);
   if (all.count > 0) {
-    verdict_fact (m, "fixed all the same", text_list_joined (m->arena, &all));
+    verdict_fact (m, "fixed all the same", verdict_joined (m, "fixed all the same", &all));
   }
   if (gases.count > 0) {
     verdict_fact (m, all.count > 0 ? "" : "fixed all the same",
                   arena_format (m->arena, "composition%s of %s", gases.count > 1 ? "s" : "",
-                                text_list_joined (m->arena, &gases)));
+                                verdict_joined (m, "composition fixed", &gases)));
   }
   if (m->solution->scale_open) {
     verdict_fact (m, "no flow is known",
@@ -109,10 +109,16 @@ what_ties_them (struct verdict_maker *m)
     }
     text = arena_format (m->arena, "%s = %s", m->plant->stream[left->stream].name, text);
     text_list_add (m->arena, &texts, text);
-    verdict_fact (m, i ? "" : "tied to each other",
-                  i ? text : arena_format (m->arena, "%s   (%s)", text, m->unit));
   }
   m->verdict->relations_left = text_list_done (&texts);
+  size_t named = verdict_named (m, "tied to each other", &texts);
+  for (size_t i = 0; i < named; i++) {
+    verdict_fact (m, i ? "" : "tied to each other",
+                  i ? texts.at[i] : arena_format (m->arena, "%s   (%s)", texts.at[i], m->unit));
+  }
+  if (named < texts.count) {
+    verdict_fact (m, "", arena_format (m->arena, "and %zu more", texts.count - named));
+  }
 }
 
 const struct verdict_texts *
@@ -136,9 +142,16 @@ verdict_sets (struct verdict_maker *m, size_t suggestion_count,
       sets[(*count)++] = text_list_done (&lists[g]);
     }
   }
+  size_t told = *count > VERDICT_NAMED + 1 ? VERDICT_NAMED : *count;
   for (size_t g = 0; g < *count; g++) {
-    verdict_fact (m, g > 0 ? "and one of" : *count == 1 ? alone : "one of",
-                  text_list_joined (m->arena, &lists[g]));
+    const char *label = g > 0 ? "and one of" : *count == 1 ? alone : "one of";
+    const char *joined = verdict_joined (m, label, &lists[g]);
+    if (g < told) {
+      verdict_fact (m, label, joined);
+    }
+  }
+  if (told < *count) {
+    verdict_fact (m, "", arena_format (m->arena, "and one of each of %zu more", *count - told));
   }
   return sets;
 }
@@ -154,7 +167,7 @@ what_would_close_it (struct verdict_maker *m)
     text_list_add (m->arena, &useless, quantity_text (m, &s->useless[i]));
   }
   if (useless.count > 0) {
-    verdict_fact (m, "no help", text_list_joined (m->arena, &useless));
+    verdict_fact (m, "no help", verdict_joined (m, "no help", &useless));
   }
 }
 

@@ -13,6 +13,7 @@ struct verdict_maker {
   const struct solution *solution;
   struct balance_verdict *verdict;
   struct verdict_row **last_fact, **last_row;
+  struct verdict_list **last_list;
   double per;                              /* flows are told as value * per ... */
   const char *unit;                        /* ... in this */
 };
@@ -21,10 +22,16 @@ struct verdict_maker {
 struct text_list { const char **at; size_t count, room; struct seen seen; };
 void text_list_add (struct arena *, struct text_list *, const char *);
 struct verdict_texts text_list_done (const struct text_list *);
-/* "a, b, c".  */
-const char *text_list_joined (struct arena *, const struct text_list *);
+/* How many of a list a sentence names: all, or the first VERDICT_NAMED where there are more than
+   one more; then the verdict keeps all of them as WHAT.  */
+enum { VERDICT_NAMED = 8 };
+size_t verdict_named (struct verdict_maker *, const char *what, const struct text_list *);
+/* "a, b, c", of many "a, b, c and 9 more".  */
+const char *verdict_joined (struct verdict_maker *, const char *what, const struct text_list *);
 
 void verdict_fact (struct verdict_maker *, const char *label, const char *text);
+/* The texts in a row each, LABEL before the first; of many the first, as above.  */
+void verdict_facts (struct verdict_maker *, const char *label, const struct text_list *);
 struct verdict_row *verdict_add_row (struct verdict_maker *, size_t number);
 /* "flow of tail", "CH4 of tail".  */
 const char *quantity_text (const struct verdict_maker *, const struct quantity *);

@@ -130,10 +130,10 @@ tell_who (struct verdict_maker *m)
   struct text_list names = standing_out (m, &z);
   struct result *result = m->ev->result;
   const char *figure = arena_format (m->arena, "%.4g", z);
+  const char *joined = verdict_joined (m, "stand out alike", &names);
   if (!result || names.count == 0) {
     return;
   }
-  const char *joined = text_list_joined (m->arena, &names);
   if (z <= m->solution->z_critical && m->solution->passed) {
     result_remark (result, names.count > 1 ? MESSAGE_NOTE_NONE_STANDS_OUT_TIE
                                            : MESSAGE_NOTE_NONE_STANDS_OUT, joined, figure);
@@ -194,15 +194,16 @@ tell_eliminations (struct verdict_maker *m)
   for (size_t i = 0; i < s->elimination_count; i++) {
     const struct elimination *e = &s->eliminations[i];
     const struct adjustment *a = &s->adjustments[e->adjustment];
-    const char *others = "";
+    struct text_list others = { .at = NULL };
     for (size_t k = 0; k < e->tie_count; k++)
       if (e->tie[k] != e->adjustment) {
-        others = arena_format (m->arena, "%s%s%s", others, *others ? ", " : " (or ",
-                               figure_name (m, &s->adjustments[e->tie[k]]));
+        text_list_add (m->arena, &others, figure_name (m, &s->adjustments[e->tie[k]]));
       }
+    const char *joined = verdict_joined (m, "or instead", &others);
     verdict_fact (m, i ? "and then" : "left out in turn",
-                  arena_format (m->arena, "without %s%s%s chi2 is %.4g with %zu to spare; it would "
-                                "be %s", figure_name (m, a), others, *others ? ")" : "",
+                  arena_format (m->arena, "without %s%s%s%s chi2 is %.4g with %zu to spare; it "
+                                "would be %s", figure_name (m, a), *joined ? " (or " : "", joined,
+                                *joined ? ")" : "",
                                 e->chi2_left, e->freedom_left,
                                 fact_value_text (m, a->fact, e->implied)));
   }
@@ -216,18 +217,19 @@ tell_by_digits (struct verdict_maker *m)
     if (m->solution->by_digits[f]) {
       text_list_add (m->arena, &lines, m->plant->fact[f].words);
     }
+  const char *joined = verdict_joined (m, "counted with their digits", &lines);
   if (lines.count > 0 && m->ev->result) {
-    result_remark (m->ev->result, MESSAGE_TAKEN_DIGITS, text_list_joined (m->arena, &lines), NULL);
+    result_remark (m->ev->result, MESSAGE_TAKEN_DIGITS, joined, NULL);
   }
+  struct text_list held = { .at = NULL };
+  size_t n = m->plant->network.components;
+  for (size_t i = 0; i < m->solution->held_count; i++)
+    if (m->solution->held[i] < n * m->plant->stream_count) {
+      text_list_add (m->arena, &held, m->plant->stream[m->solution->held[i] / n].name);
+    }
+  joined = verdict_joined (m, "held at zero", &held);
   if (m->solution->held_count > 0 && m->ev->result) {
-    struct text_list held = { .at = NULL };
-    size_t n = m->plant->network.components;
-    for (size_t i = 0; i < m->solution->held_count; i++)
-      if (m->solution->held[i] < n * m->plant->stream_count) {
-        text_list_add (m->arena, &held, m->plant->stream[m->solution->held[i] / n].name);
-      }
-    result_remark (m->ev->result, MESSAGE_NOTE_HELD_AT_ZERO, text_list_joined (m->arena, &held),
-                   NULL);
+    result_remark (m->ev->result, MESSAGE_NOTE_HELD_AT_ZERO, joined, NULL);
   }
 }
 

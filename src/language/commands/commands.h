@@ -46,7 +46,7 @@ void card_of_state (struct session *, const struct definition *, struct result *
 void card_of_sheet (const struct definition *, struct result *);
 /* Its equations, matrix or detectability; false for another PART.  */
 bool card_of_balance_part (const struct definition *, const char *part, struct result *);
-void card_of_balance (const struct definition *, struct result *);
+void card_of_balance (struct session *, const struct definition *, struct result *);
 void card_of_property (struct session *, enum property, struct result *);
 /* All settings, or only ONE.  */
 void card_of_settings (struct session *, const enum setting *one, struct result *);

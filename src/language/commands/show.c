@@ -36,7 +36,7 @@ show_definition (struct session *session, const struct statement *s, struct defi
     return true;
   case NAME_BALANCE:
     if (!s->text || !card_of_balance_part (d, s->text, result)) {
-      card_of_balance (d, result);
+      card_of_balance (session, d, result);
     }
     return true;
   }
