@@ -21,7 +21,7 @@
 #define ROUNDING 1e-12
 
 enum { GAP = 3, GAP_UNIT = 2, LABEL_WIDTH = 13,
-       FITS_TOO = 5 /* readings shown beside a figure that holds as written */ };
+       FITS_TOO = 5 /* readings shown beside a figure that holds as written, usual ones first */ };
 
 /* The figures of all rows stand under each other.  */
 struct column { size_t label, whole, fraction, unit; };
@@ -268,7 +268,8 @@ readings_add (struct text *out, const struct report_style *style, const struct c
     if (holds && shown == FITS_TOO) {
       text_add_repeated (out, ' ', GAP);
       const struct fold fold = fold_here (out);
-      text_add_format (out, "and %zu more", v->reading_count - shown);
+      text_add_format (out, "and %zu more, less usual or farther off; --format json has them all",
+                       v->reading_count - shown);
       line_end (out, style, fold);
       return;
     }

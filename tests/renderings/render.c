@@ -192,6 +192,30 @@ build_check (struct result *result)
   result->check = &verdict;
 }
 
+/* A figure that holds, which seven other readings would explain as well.  */
+static void
+build_holds (struct result *result)
+{
+  enum { READINGS = 7 };
+  static const char *const said[READINGS] = {
+    "Nm3 at 273 K, 101325 Pa", "Nm3 at 0 degC, 101.3 kPa", "the real gas", "counted dry",
+    "the fifth, long enough to be set on two lines: reference volumes of the real gas in it",
+    "the sixth", "the seventh"
+  };
+  static struct check_reading reading[READINGS];
+  static struct check_verdict verdict = {
+    .stated = "169 kg/h", .outcome = CHECK_HOLDS, .value = 169, .computed = 168.858,
+    .difference = 0.142, .deviation = 0.142 / 168.858, .limit = 0.5, .by_digits = true,
+    .unit = "kg/h", .reading_count = READINGS, .tied = 1, .readings = reading };
+  for (size_t i = 0; i < READINGS; i++)
+    reading[i] = (struct check_reading) { said[i], 168.9 + 0.01 * (double) i, "kg/h",
+                                          169 / (168.9 + 0.01 * (double) i) - 1, (int) i + 1,
+                                          i + 1 < READINGS ? &reading[i + 1] : NULL };
+  result->statement = "check 86 Nm3/h of CO2 against 169 kg/h";
+  add_answer (result, "CO2", 168.858, "kg/h", "dry", NULL);
+  result->check = &verdict;
+}
+
 /* Nothing fits, and one quantity cannot be had; a temperature has no per cent.  */
 static void
 build_unexplained (struct result *result)
@@ -433,6 +457,7 @@ static const struct scene scenes[] = {
   { "gas-card", "text prompt weights json csv", build_gas_card, NULL },
   { "stream-card", "text json csv", build_stream_card, NULL },
   { "check", "text prompt weights json csv", build_check, NULL },
+  { "check-holds", "text json", build_holds, NULL },
   { "check-unexplained", "text prompt json csv", build_unexplained, NULL },
   { "check-sheet", "text prompt json csv", build_sheet, NULL },
   { "help-page", "text prompt json csv", build_help, NULL },
