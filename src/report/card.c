@@ -24,7 +24,8 @@ enum { GAP = 3, CLOSE_GAP = 2 };
 struct column { size_t before, behind; bool is_text; };
 
 /* The columns of a card that stand side by side, by their number in it.  */
-struct band { const struct column *columns; size_t name_width, gap, count, *which; };
+struct band { const struct column *columns; size_t name_width, gap, count, *which;
+              double coverage; };
 
 /* 5.00000 as 5, 0.100500 as 0.1005; a figure with an exponent stays.  */
 static void
@@ -52,13 +53,15 @@ uncertain_add (struct text *out, const struct report_style *style, double value,
 }
 
 static const char *
-cell_write (struct text *scratch, const struct report_style *style, const struct cell *cell)
+cell_write (struct text *scratch, const struct report_style *style, const struct cell *cell,
+            double coverage)
 {
+  const double spread = coverage > 0 ? coverage * cell->spread : cell->spread;
   text_empty (scratch);
   if (cell->text != NULL)
     shown_add (scratch, style, cell->text);
-  else if (cell->is_number && figure_is_uncertain (cell->value, cell->spread))
-    uncertain_add (scratch, style, cell->value, cell->spread);
+  else if (cell->is_number && figure_is_uncertain (cell->value, spread))
+    uncertain_add (scratch, style, cell->value, spread);
   else if (cell->is_number) {
     figure_write (scratch, style, cell->value);
     if (cell->recorded)
@@ -89,7 +92,7 @@ column_measure (struct column *column, struct text *scratch, const struct report
       column->is_text = false;
   column->behind = shown_width (style, card->headings != NULL ? card->headings[i] : NULL);
   for (const struct card_row *r = card->rows; r != NULL; r = r->next) {
-    const char *shown = cell_write (scratch, style, &r->cells[i]);
+    const char *shown = cell_write (scratch, style, &r->cells[i], card->coverage);
     const size_t before = cell_before (column, &r->cells[i], shown);
     const size_t behind = utf8_characters (shown, strlen (shown)) - before;
     if (before > column->before)
@@ -140,7 +143,7 @@ row_add (struct text *out, const struct report_style *style, const struct card_r
   for (size_t k = 0; k < band->count; k++) {
     const struct column *column = &band->columns[band->which[k]];
     const struct cell *cell = &row->cells[band->which[k]];
-    const char *shown = cell_write (&scratch, style, cell);
+    const char *shown = cell_write (&scratch, style, cell, band->coverage);
     const size_t before = cell_before (column, cell, shown);
     const size_t width = utf8_characters (shown, strlen (shown));
     blanks += band->gap + column->before - before;
@@ -227,7 +230,8 @@ rows_add (struct text *out, const struct report_style *style, const struct card 
     which[i] = i;
   }
   text_clear (&scratch);
-  struct band band = { columns, name_column (style, card), GAP, card->columns, which };
+  struct band band = { columns, name_column (style, card), GAP, card->columns, which,
+                       card->coverage };
   const size_t used = MARGIN + band.name_width;
   const size_t room = used < line_width (style) ? line_width (style) - used : 0;
   if (card->together > 0 && columns_width (&band, 0, card->columns) > room)

@@ -13,6 +13,7 @@
 #include "result/note.h"
 #include "result/result.h"
 #include "result/workings_record.h"
+#include "support/number.h"
 #include "support/text.h"
 #include "units/workings.h"
 
@@ -92,7 +93,7 @@ answer_write (struct writer *w, const struct answer *a)
   text_init (&spread);
   text_init (&basis);
   if (figure_is_uncertain (a->value, a->uncertainty))
-    figure_write_uncertain (&figure, a->value, &spread, a->uncertainty);
+    figure_write_uncertain (&figure, a->value, &spread, a->coverage * a->uncertainty);
   else if (!isnan (a->value))
     figure_write (&figure, &w->style, a->value);
   if (!isnan (a->value))
@@ -112,22 +113,41 @@ answer_write (struct writer *w, const struct answer *a)
   text_clear (&basis);
 }
 
+/* What stands behind the figures of a result: as set when it was asked.  */
+static const char *
+spread_heading (const struct note_result *r, struct text *scratch)
+{
+  size_t n = 0;
+  for (const struct answer *a = r->answers; a != NULL && n < r->count; a = a->next, n++)
+    if (a->coverage > 1 && figure_is_uncertain (a->value, a->uncertainty)) {
+      text_empty (scratch);
+      text_add (scratch, "expanded uncertainty (k=");
+      number_write_exact (scratch, a->coverage);
+      text_add_char (scratch, ')');
+      return scratch->bytes;
+    }
+  return "standard uncertainty";
+}
+
 static void
 results_write (struct writer *w)
 {
-  static const char *const headings[] = { "result", "figure", "standard uncertainty", "basis" };
+  struct text scratch;
+  text_init (&scratch);
   const struct paper_form *form = w->paper.form;
   heading (w, "Results");
   if (w->note->results == NULL)
     paragraph (w, "Nothing was asked.");
   for (const struct note_result *r = w->note->results; r != NULL; r = r->next) {
     form->subheading (&w->paper, r->statement);
+    const char *const headings[] = { "result", "figure", spread_heading (r, &scratch), "basis" };
     form->table_open (&w->paper, 4, headings);
     size_t n = 0;
     for (const struct answer *a = r->answers; a != NULL && n < r->count; a = a->next, n++)
       answer_write (w, a);
     form->table_close (&w->paper);
   }
+  text_clear (&scratch);
   if (w->note->results_left_out > 0) {
     struct text line;
     text_init (&line);

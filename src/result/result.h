@@ -63,6 +63,7 @@ struct card {
   size_t columns;
   size_t together;                /* so many columns a step, parted if too wide; 0: not */
   const char *const *headings;    /* of the columns, without the name column */
+  double coverage;                /* spreads are shown times this; 0: as they are */
   struct card_row *rows, **last_row;
   struct card_line *lines, **last_line;
   struct card *next;

@@ -217,6 +217,19 @@ def odds(tap):
         tap.tell([] if status == 0 and "duty" in code else code + err, "blocks can be run again")
 
 
+def coverage(tap):
+    """850 kg/h ± 2 % is 17 kg/h, standard; the heading says what stands below it."""
+    with Folder() as folder:
+        folder.run("850 kg/h ± 2 % of CO2 in kg/h\nset coverage 2\n850 kg/h ± 2 % of N2 in kg/h\n"
+                   '1 kg in lb\nnote "n.md"\n')
+        text = folder.read("n.md").split("## Results")[1].split("\n## ")[0]
+        first, second, third = text.split("\n### ")[1:4]
+        tap.tell([] if "| standard uncertainty |" in first and "| 17 |" in first
+                 and "| expanded uncertainty (k=2) |" in second and "| 34 |" in second
+                 and "| standard uncertainty |" in third else text,
+                 "a note says which uncertainty it prints")
+
+
 def checks(tap):
     """A check in a note: the stated figure and what would explain it."""
     with Folder() as folder:
@@ -259,6 +272,7 @@ def main():
     inputs(tap)
     odds(tap)
     checks(tap)
+    coverage(tap)
     return tap.finish()
 
 

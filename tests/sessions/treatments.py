@@ -82,7 +82,7 @@ def each_says(tap):
                        "text")[1].split("molar mass")[0]
     wide = [line for line in card.split("\n") if len(line) > 100]
     tap.tell(wide, "the card of a long analysis keeps within 100 columns")
-    for pattern in (r"\n +mol% +raw mol% +mass% +raw mass% +stated as\n",
+    for pattern in (r"\n +mol% +raw mol% +stated as\n", r"\n +mass% +raw mass% +stated as\n",
                     r"\n +g/Nm3 +raw g/Nm3 +stated as\n",
                     r"\n +H2S \.+ +0\.000[^\n]+ 8 ppm . 4\n(.*\n)*.*H2S \.+ +0\.012[^\n]+ 8 ppm"):
         tap.tell([] if re.search(pattern, card) else [pattern, card],

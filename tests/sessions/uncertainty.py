@@ -94,6 +94,31 @@ def standard(tap):
         example(tap, list(group), correlation if case.endswith("fullcorr") else None)
 
 
+def parts(tap):
+    """The ± of each part on a gas's card.  Of CH4 x, CO2 1 - x the share by mass is x M1/M, and its
+    derivative by x is M1 M2/M^2; by volume x M1/V, for CO2 (1 - x) M2/V."""
+    M1, M2, x, u, V = 16.043, 44.009, 0.6, 0.003, 22.41396954e-3
+    M = x * M1 + (1 - x) * M2
+    want = {"CH4": (100 * u, 100 * u * M1 * M2 / M ** 2, u * M1 / V),
+            "CO2": (100 * u, 100 * u * M1 * M2 / M ** 2, u * M2 / V)}
+    gas = "gas g = CH4 60 ± 0.3, CO2 rest mol%\n"
+    for coverage, k in (("", "standard (k=1)"), ("set coverage 2\n", "expanded (k=2)")):
+        card = session.answers(gas + coverage + "show g")[-1]["card"]
+        wrong = [line for row in card["rows"] for got, figure in
+                 zip(row["uncertainties"], want[row["name"]])
+                 for line in [session.off(got, figure, 1e-5)] if line]
+        said = any(k in line and "closure" in line for line in card["lines"])
+        wrong += [] if said else card["lines"]
+        tap.tell(wrong, "each part of a card has its uncertainty, " + k)
+    _, out, _ = session.run(gas + "set coverage 2\nshow g", form="text")
+    tap.tell([] if "60.00 ± 0.60" in out.replace("+/-", "±") else out,
+             "and shows it times the coverage")
+    card = session.answers("gas g = CH4 60, CO2 rest mol%\nshow g")[-1]["card"]
+    tap.tell([] if not any("±" in line for line in card["lines"])
+             and not any("uncertainties" in row for row in card["rows"]) else card,
+             "a card of exact parts has none")
+
+
 def settings(tap):
     """What the settings do, and that they last: set, listed, saved, opened, taken back."""
     question = "850 Nm3/h ± 2 % of N2 in Nm3/h\n"
@@ -324,6 +349,7 @@ def main():
     cards(tap)
     effects(tap)
     standard(tap)
+    parts(tap)
     settings(tap)
     another_library(tap)
     supplement(tap)

@@ -189,6 +189,20 @@ uncertain_line (struct session *session, const char *name, struct result *result
   }
 }
 
+/* What the ± of the parts are, and what they are not.  */
+static void
+correlation_line (struct session *session, struct result *result, struct card *card)
+{
+  const double k = session->settings.coverage;
+  card_add_line (result, card,
+                 arena_format (result->arena, "± of each part by itself, %s; %s",
+                               k > 1 ? arena_format (result->arena, "expanded (k=%s)",
+                                                     figure_text (result->arena, k))
+                                     : "standard (k=1)",
+                               session->settings.parts_independent
+                                 ? "parts independent, as set" : "the closure correlates them"));
+}
+
 void
 card_add_limits (struct session *session, struct result *result, struct card *card,
                  const struct composition *gas)
@@ -233,10 +247,40 @@ raw_cells (const struct raw *raw, const struct species *species, struct cell *ce
   number_cell (&cells[5], 1000 * moles * species->molar_mass / raw->moles / raw->Vm);
 }
 
+/* The standard uncertainties of the parts in the three bases, one basis behind the other; null
+   where nothing in the gas is uncertain.                                                        */
+static const struct budget *const *
+spreads_of (struct session *session, struct arena *arena, const struct composition *gas,
+            const char *name)
+{
+  struct definition *d = name_find (session, name, strlen (name));
+  size_t count = 0;
+  const struct budget **budgets = NULL;
+  if (d && d->source_count > 0) {
+    budgets = uncertainty_of_figures (session, arena,
+                                      arena_format (arena, "%s in mol%%, mass%%, g/Nm3",
+                                                    name_text (arena, name)), &count);
+  }
+  return budgets && count == 3 * gas->count ? budgets : NULL;
+}
+
+/* The figures of now get their uncertainties, each for itself.  */
+static void
+spread_cells (const struct composition *gas, const struct budget *const *spreads, size_t step,
+              const struct species *species, struct cell *cells)
+{
+  for (size_t i = 0; spreads && i < gas->count; i++)
+    for (size_t k = 0; gas->species[i] == species && k < 3; k++) {
+      const struct budget *b = spreads[k * gas->count + i];
+      cells[k * step].spread = b ? b->uncertainty : 0;
+    }
+}
+
 /* One part of a closed gas, with the raw figures beside those of now where there are any.  */
 static void
 part_row (struct session *session, const struct gas_value *gas, const struct raw *raw,
-          const struct species *species, struct result *result, struct card *card)
+          const struct species *species, struct result *result, struct card *card,
+          const struct budget *const *spreads)
 {
   const struct composition *c = gas->closed;
   size_t step = raw->analysis ? 2 : 1;
@@ -245,6 +289,7 @@ part_row (struct session *session, const struct gas_value *gas, const struct raw
   number_cell (&cells[0], 100 * x);
   number_cell (&cells[step], 100 * mass / c->molar_mass);
   number_cell (&cells[2 * step], 1000 * mass / raw->Vm);
+  spread_cells (c, spreads, step, species, cells);
   if (raw->analysis) {
     raw_cells (raw, species, cells);
   }
@@ -267,15 +312,17 @@ closed_card (struct session *session, const struct gas_value *gas, const char *n
   struct card *card = result_card (result, name, kind_text (session, result->arena, c, "gas"),
                                    (raw.analysis ? 6u : 3u) + (gas->list != NULL),
                                    raw.analysis ? treated : plain);
+  const struct budget *const *spreads = spreads_of (session, result->arena, c, name);
   card->together = raw.analysis ? 2 : 1;
+  card->coverage = session->settings.coverage;
   for (size_t i = 0; raw.analysis && i < raw.analysis->count; i++) {
-    part_row (session, gas, &raw, raw.analysis->parts[i].species, result, card);
+    part_row (session, gas, &raw, raw.analysis->parts[i].species, result, card, spreads);
   }
   for (size_t i = 0; i < c->count; i++)
     if (!raw.analysis
         || parts_find (raw.analysis->count, raw.analysis->parts, c->species[i])
              == raw.analysis->count) {
-      part_row (session, gas, &raw, c->species[i], result, card);
+      part_row (session, gas, &raw, c->species[i], result, card, spreads);
     }
   if (raw.analysis && raw.analysis->whole != WHOLE_NONE) {
     card_add_line (result, card,
@@ -288,6 +335,7 @@ closed_card (struct session *session, const struct gas_value *gas, const char *n
   struct definition *d = name_find (session, name, strlen (name));
   if (d && d->source_count > 0) {
     uncertain_line (session, name, result, card);
+    correlation_line (session, result, card);
   }
   card_add_limits (session, result, card, c);
 }

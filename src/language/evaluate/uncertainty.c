@@ -134,8 +134,9 @@ uncertainty_budgets (const struct evaluation *first, const struct statement *s,
   return budgets;
 }
 
-double
-uncertainty_of_question (struct session *session, struct arena *arena, const char *question)
+const struct budget **
+uncertainty_of_figures (struct session *session, struct arena *arena, const char *question,
+                        size_t *count)
 {
   struct parser *parser = parser_create (arena, &session->vocabulary, question,
                                          strlen (question), 1, BLOCK_NONE);
@@ -145,11 +146,21 @@ uncertainty_of_question (struct session *session, struct arena *arena, const cha
   struct value value;
   struct figures figures = { NULL, 0, 0 };
   fault_init (&unheard, arena);
+  *count = 0;
   if (!parser_next (parser, &s, &unheard) || !s) {
-    return UNSTATED;
+    return NULL;
   }
   evaluation_init (&ev, session, NULL, &unheard);
   const struct budget **budgets = question_figures (&ev, s, &value, &figures)
                                     ? uncertainty_budgets (&ev, s, &figures) : NULL;
-  return budgets && figures.count > 0 && budgets[0] ? budgets[0]->uncertainty : UNSTATED;
+  *count = budgets ? figures.count : 0;
+  return budgets;
+}
+
+double
+uncertainty_of_question (struct session *session, struct arena *arena, const char *question)
+{
+  size_t count;
+  const struct budget **budgets = uncertainty_of_figures (session, arena, question, &count);
+  return count > 0 && budgets[0] ? budgets[0]->uncertainty : UNSTATED;
 }

@@ -8,6 +8,7 @@
 #ifndef LANGUAGE_EVALUATE_UNCERTAINTY_H
 #define LANGUAGE_EVALUATE_UNCERTAINTY_H
 
+#include <stddef.h>
 #include "support/check.h"
 
 struct arena; struct budget; struct evaluation; struct figures; struct session; struct statement;
@@ -19,6 +20,10 @@ const struct budget **uncertainty_budgets (const struct evaluation *first,
                                            const struct statement *s,
                                            const struct figures *) MUST_CHECK;
 
+/* The budgets of all COUNT figures that QUESTION, a statement, answers with, as above; null with
+   COUNT 0 where it has no answer.  What is made for it is put in the arena.                     */
+const struct budget **uncertainty_of_figures (struct session *, struct arena *,
+                                              const char *question, size_t *count) MUST_CHECK;
 /* The standard uncertainty of the first figure that QUESTION, a statement, answers with; NAN where
    it has none.  What is made for it is put in the arena.                                        */
 double uncertainty_of_question (struct session *, struct arena *, const char *question);
