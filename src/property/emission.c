@@ -40,6 +40,15 @@ plain_name (const char *name, char out[], size_t room)
   out[n] = '\0';
 }
 
+static struct fuel
+fuel_of (const struct figures_row *row)
+{
+  struct fuel fuel = { row->key, { 0 }, row->source };
+  for (size_t i = 0; i < F_FACTORS; i++)
+    fuel.factor[i] = row->value[i] * FT3_PER_MMBTU;
+  return fuel;
+}
+
 bool
 fuel_find (struct property_tables *tables, const char *name, struct fuel *fuel,
            struct fault *fault)
@@ -52,12 +61,30 @@ fuel_find (struct property_tables *tables, const char *name, struct fuel *fuel,
     return false;
   plain_name (name, plain, sizeof plain);
   const struct figures_row *row = figures_named (figures, plain);
-  if (row == NULL)
-    return true;
-  fuel->name = row->key;
-  fuel->source = row->source;
-  for (size_t i = 0; i < F_FACTORS; i++)
-    fuel->factor[i] = row->value[i] * FT3_PER_MMBTU;
+  *fuel = row != NULL ? fuel_of (row) : *fuel;
+  return true;
+}
+
+struct visiting { void (*visit) (const struct fuel *, void *with); void *with; };
+
+static void
+visit_fuel (const struct figures_row *row, void *with)
+{
+  struct visiting *v = with;
+  const struct fuel fuel = fuel_of (row);
+  v->visit (&fuel, v->with);
+}
+
+bool
+fuel_each (struct property_tables *tables, void (*visit) (const struct fuel *, void *with),
+           void *with, struct fault *fault)
+{
+  struct visiting v = { visit, with };
+  const struct figures *figures = property_tables_read (tables, PROPERTY_TABLE_FUELS, F_FACTORS,
+                                                        columns, fault);
+  if (figures == NULL)
+    return false;
+  figures_each (figures, visit_fuel, &v);
   return true;
 }
 

@@ -27,6 +27,9 @@ struct fuel { const char *name; double factor[F_FACTORS]; const char *source; };
    table has none of that name.  False with FAULT if a user's table cannot be read.              */
 bool fuel_find (struct property_tables *, const char *name, struct fuel *, struct fault *)
   MUST_CHECK;
+/* Calls VISIT for every fuel of the table; false with FAULT as above.  */
+bool fuel_each (struct property_tables *, void (*visit) (const struct fuel *, void *with),
+                void *with, struct fault *) MUST_CHECK;
 /* The fuel of the table a gas is most like: natural gas, propane or butane by the largest part that
    burns; null: none.                                                                            */
 const char *fuel_like (const struct composition *);

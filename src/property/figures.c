@@ -72,6 +72,24 @@ figures_named (const struct figures *figures, const char *key)
   return map_find (figures->rows, key, strlen (key));
 }
 
+struct visiting { void (*visit) (const struct figures_row *, void *with); void *with; };
+
+static void
+visit_row (const char *key, void *row, void *with)
+{
+  struct visiting *v = with;
+  (void) key;
+  v->visit (row, v->with);
+}
+
+void
+figures_each (const struct figures *figures, void (*visit) (const struct figures_row *, void *with),
+              void *with)
+{
+  struct visiting v = { visit, with };
+  map_each (figures->rows, visit_row, &v);
+}
+
 bool
 figures_cover (const struct figures *figures, const struct composition *gas, struct fault *fault)
 {

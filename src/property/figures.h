@@ -31,6 +31,10 @@ const struct figures_row *figures_of (const struct figures *, const struct speci
 /* The row of KEY, whatever that names; null: none.  */
 const struct figures_row *figures_named (const struct figures *, const char *key);
 
+/* Calls VISIT for every row, in the order of the table.  */
+void figures_each (const struct figures *, void (*visit) (const struct figures_row *, void *with),
+                   void *with);
+
 /* Has every part of a gas a row?  If not: kind model-lacks, naming the largest part without.  */
 bool figures_cover (const struct figures *, const struct composition *,
                     struct fault *) MUST_CHECK;

@@ -62,7 +62,7 @@ static const char *const offered_units[] = {
 static const char *const state_words[] = { "dry", "saturated", "ideal", "real", "water", "Z",
                                            "dew point", "site pressure", NULL };
 static const char *const lists[] = { "gases", "streams", "quantities", "sheets", "balances",
-                                     "units", "components", "references", "readings",
+                                     "units", "components", "references", "fuels", "readings",
                                      "properties", "settings", NULL };
 
 /* A search in progress.  */

@@ -48,8 +48,10 @@ def shown(columns):
 
 
 def words(text):
-    """All but blanks, and the lines of tabs, which are as long as there is room."""
-    return "".join(text.replace("_", "").split())
+    """All but blanks, and the lines of tabs, which are as long as there is room.  A card that is set
+    in bands says its names and headings in each: of cards every word counts once."""
+    return ["".join(sorted(set(part.split())) if "_/" in part else part.split()).replace("_", "")
+            for part in text.split("\n\n")]
 
 
 def main():

@@ -8,6 +8,7 @@
 #include "gas/species.h"
 #include "language/check/readings.h"
 #include "language/evaluate/wording.h"
+#include "property/emission.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -136,6 +137,40 @@ list_readings (struct session *s, const struct statement *statement, struct resu
   return true;
 }
 
+/* F factors of what burns, in the unit of the method.  */
+struct fuels { struct result *result; struct card *card; double per; };
+
+static void
+fuel_row (const struct fuel *fuel, void *with)
+{
+  struct fuels *f = with;
+  struct cell *cells = card_add_row (f->result, f->card,
+                                     arena_string (f->result->arena, fuel->name));
+  for (size_t i = 0; i < F_FACTORS; i++) {
+    cells[i].is_number = cells[i].recorded = !isnan (fuel->factor[i]);
+    cells[i].value = fuel->factor[i] / f->per;
+  }
+  cells[F_FACTORS].text = arena_string (f->result->arena, fuel->source);
+}
+
+static bool
+list_fuels (struct session *s, const struct statement *statement, struct result *result,
+            struct fault *fault)
+{
+  static const char *const headings[] = { "dry", "wet", "carbon", "source" };
+  const struct unit *unit = unit_find (s->vocabulary.units, "ft3/MMBtu", strlen ("ft3/MMBtu"),
+                                       fault);
+  struct card *card = result_card (result, "fuels", "F factors, Method 19", 4, headings);
+  struct fuels fuels = { result, card, unit ? unit_to_si (unit, 1) : 1 };
+  if (!unit || !fuel_each (s->properties, fuel_row, &fuels, fault)) {
+    fault_place (fault, statement->at);
+    return false;
+  }
+  card_add_line (result, card,
+                 "ft3 of flue gas, or of its CO2, at 68 degF, 1 atm for 1e6 Btu gross");
+  return true;
+}
+
 static void
 list_properties (struct result *result)
 {
@@ -257,6 +292,8 @@ command_list (struct session *session, const struct statement *s, struct result 
     list_references (session, result);
   } else if (strcmp (s->name, "readings") == 0) {
     return list_readings (session, s, result, fault);
+  } else if (strcmp (s->name, "fuels") == 0) {
+    return list_fuels (session, s, result, fault);
   } else if (strcmp (s->name, "properties") == 0) {
     list_properties (result);
   } else if (strcmp (s->name, "settings") == 0) {
@@ -264,7 +301,7 @@ command_list (struct session *session, const struct statement *s, struct result 
   } else {
     return fault_set_at (fault, MESSAGE_NAME_UNKNOWN, s->name_at, s->name,
                          "list, or list gases, streams, quantities, sheets, balances, units, "
-                         "components, references, readings, properties, settings");
+                         "components, references, fuels, readings, properties, settings");
   }
   return true;
 }

@@ -3,6 +3,7 @@
 
 #include <errno.h>
 #include <string.h>
+#include <strings.h>
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -17,8 +18,12 @@ fault_inside (const struct statement *s, const struct fault *inside, struct faul
 {
   fault_set_at (fault, inside->kind, s->text_at, inside->fact[0], inside->fact[1]);
   fault_facts (fault, inside->fact[2], inside->fact[3]);
-  fault_hint (fault, "%s, line %d, column %d; nothing of it was kept", s->text, inside->at.line,
-              inside->at.first);
+  const size_t n = strlen (s->text);
+  const bool table = n > 4 && strcasecmp (s->text + n - 4, ".csv") == 0;
+  fault_hint (fault, "%s, line %d, column %d; nothing of it was kept%s%s%s", s->text,
+              inside->at.line, inside->at.first,
+              table ? "; a table of analyses is read with: gas lab from \"" : "",
+              table ? s->text : "", table ? "\"" : "");
   return false;
 }
 

@@ -38,9 +38,10 @@ convert_f_factor (struct conversion *c)
   const bool customary = c->unit->family_power == 0 || c->unit->family == FAMILY_SCF;
   const double F = v->si * (at.T / v->T) * (v->p / at.p);
   if (ev->describe) {
-    standing.basis = arena_format (ev->arena, "%s, %s, %s, of an ideal gas", v->basis,
-                                   temperature_text (ev->arena, at.T, isnan (c->state.T)
-                                                                      && customary),
+    const bool feet = customary && isnan (c->state.T);
+    standing.basis = arena_format (ev->arena, "%s%s%s, %s, of an ideal gas",
+                                   v->basis ? v->basis : "", v->basis ? ", " : "",
+                                   temperature_text (ev->arena, at.T, feet),
                                    pressure_text (ev->arena, at.p, false));
   }
   if (at.T < v->T || at.T > v->T || at.p < v->p || at.p > v->p) {

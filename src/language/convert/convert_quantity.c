@@ -299,7 +299,7 @@ convert_quantity (struct conversion *c)
     }
   }
   struct dimension d = c->unit->dimension;
-  if (unit_is_f_factor (c->unit) && v->basis && !isnan (v->T) && !v->gas
+  if (unit_is_f_factor (c->unit) && isfinite (v->T) && isfinite (v->p) && !v->gas
       && dimension_equal (m->dimension, d)) {
     return convert_f_factor (c);
   }

@@ -410,7 +410,12 @@ state_wets (struct evaluation *ev, const struct state *state, const struct strea
   double y, before = composition_fraction (*gas, water);
   const char *lacks;
   if (!wants_state (state, T, p, &lacks)) {
-    return fault_set_at (ev->fault, MESSAGE_STATE_MISSING, state->at, lacks, NULL);
+    bool T_said = !isnan (T), p_said = !isnan (p);
+    fault_set_at (ev->fault, p_said ? MESSAGE_TEMPERATURE_MISSING
+                             : T_said ? MESSAGE_PRESSURE_MISSING : MESSAGE_STATE_MISSING,
+                  state->at, lacks, NULL);
+    fault_hint (ev->fault, "both: at 35 degC, 1.02 bar(a), or at 35 degC, site pressure");
+    return false;
   }
   if (!state_water (ev, state, &(struct moist_place) { T, p, *gas }, &y)) {
     fault_place (ev->fault, state->at);

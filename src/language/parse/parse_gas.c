@@ -38,6 +38,8 @@ parse_from_file (struct parser *p, struct statement *statement, bool one)
   if (opens_unit (p, &p->token) && !at_word (p, "decimal")) {
     if (!parse_unit (p, &read))
       return false;
+    if (read.unit->ratio == RATIO_PLAIN)
+      return fail (p, MESSAGE_BASIS_MISSING, read.at, NULL, NULL);
     list->unit = read.unit;
     list->text = list->unit_text = read.text;
     list->unit_at = read.at;

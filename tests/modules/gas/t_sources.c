@@ -43,7 +43,7 @@ static const char *
 skip_figures (const char *at)
 {
   static const char *const figures[] = { "Tc ", "pc ", "Vc ", "omega ", "Tb ", "lower ", "upper ",
-                                         "ignition " };
+                                         "ignition ", "Fw " };
   bool more = true;
 
   while (more) {
@@ -108,7 +108,8 @@ static void
 check_tables (void)
 {
   static const char *const tables[] = {
-    "air", "cp_ideal", "elements", "exposure", "flammability", "species", "virial", "viscosity"
+    "air", "cp_ideal", "elements", "exposure", "flammability", "fuels", "species", "virial",
+    "viscosity"
   };
 
   start ();
