@@ -3,6 +3,8 @@
 
 #include <math.h>
 #include <string.h>
+#include "balance/circuits.h"
+#include "balance/pairs.h"
 #include "balance/rank.h"
 #include "balance/reduce.h"
 #include "support/arena.h"
@@ -10,7 +12,10 @@
 
 /* Random bases tried where a set cannot be had by looking at all.  Against looking at all, 25
    found the smallest set in 168 of 175 networks with two or three facts to spare.               */
-enum { BASES = 25, MOST_PAIRS = 20000 };
+enum { BASES = 25 };
+/* Sets of facts looked through to prove that there is no smaller one, in networks of so many
+   unknowns.                                                                                     */
+enum { MOST_SETS = 400, SMALL = 300 };
 
 /* A multiplier below this part of the largest is none.  */
 static const double no_multiplier = 1e-7;
@@ -31,6 +36,8 @@ struct work {
   bool *kept;                    /* by boundary: has a row with a multiplier */
   const struct network *part;    /* what the set is about */
   double *trial_lambda, *by_figure;
+  bool all;                      /* was everything looked at? */
+  bool alone;                    /* can one fact alone be blamed for all that clashes? */
   size_t count;
   double strength;
 };
@@ -72,30 +79,6 @@ look_at (struct work *work, const double y[])
     work->strength = strength;
     memcpy (work->set, work->trial, work->core->network->facts * sizeof *work->set);
     memcpy (work->lambda, lambda, work->rows * sizeof *work->lambda);
-  }
-}
-
-/* Every elementary vector is orthogonal, in the left null space, to one fewer rows than that has
-   dimensions: with one, two and three of them all can be looked at.                             */
-static void
-look_at_all (struct work *work)
-{
-  const double *z = work->system->left;
-  if (work->surplus == 1) {
-    look_at (work, (const double[]) { 1 });
-  }
-  for (size_t i = 0; i < work->rows && work->surplus == 2; i++) {
-    look_at (work, (const double[]) { -z[2 * i + 1], z[2 * i] });
-  }
-  for (size_t i = 0; i < work->rows && work->surplus == 3; i++) {
-    for (size_t j = i + 1; j < work->rows; j++) {
-      const double *a = &z[3 * i], *b = &z[3 * j];
-      double y[] = { a[1] * b[2] - a[2] * b[1], a[2] * b[0] - a[0] * b[2],
-                     a[0] * b[1] - a[1] * b[0] };
-      if (fmax (fabs (y[0]), fmax (fabs (y[1]), fabs (y[2]))) > no_multiplier) {
-        look_at (work, y);
-      }
-    }
   }
 }
 
@@ -153,15 +136,19 @@ look_at_basis (struct work *work, unsigned long long *state)
   }
 }
 
+static void
+look_at_one (void *data, const double y[])
+{
+  look_at (data, y);
+}
+
 static bool
 find_set (struct work *work, struct fault *fault)
 {
   unsigned long long state = 20;
-  if (work->surplus < 3 || (work->surplus == 3 && work->rows * work->rows < MOST_PAIRS)) {
-    look_at_all (work);
-    return true;
-  }
-  for (int i = 0; i < BASES; i++) {
+  work->all = circuits_all (work->arena, work->rows, work->surplus, work->system->left,
+                            look_at_one, work);
+  for (int i = 0; i < BASES && !work->all; i++) {
     if (!core_goes_on (work->core->options, fault)) {
       return false;
     }
@@ -236,16 +223,15 @@ thin_out (struct work *work, struct fault *fault)
   for (size_t f = 0; f < facts; f++) {
     if (work->set[f]) {
       owned[own++] = f;
-    } else {
+    } else if (work->system->take[f]) {
       list[count++] = f;
     }
   }
   work->part = network_part (work->arena, network, work->kept, work->set);
   if (!clashes (work, work->part, work->set)) {
     work->part = network;
-    for (size_t f = 0; f < facts; f++) {
-      work->set[f] = true;
-    }
+    work->all = false;
+    memcpy (work->set, work->system->take, facts * sizeof *work->set);
     if (!leave_out (work, network, count, list, fault)) {
       return false;
     }
@@ -253,6 +239,59 @@ thin_out (struct work *work, struct fault *fault)
   for (size_t i = 0; i < own; i++) {
     if (!leave_out (work, work->part, 1, &owned[i], fault)) {
       return false;
+    }
+  }
+  return true;
+}
+
+/* Looks through all sets of SIZE facts from FROM on; TRIAL is the first that clashes.  */
+static bool
+any_of (struct work *work, size_t from, size_t size)
+{
+  const struct network *network = work->core->network;
+  if (size == 0) {
+    return clashes (work, network, work->trial);
+  }
+  for (size_t f = from; f < network->facts; f++) {
+    if (work->system->take[f]) {
+      work->trial[f] = true;
+      if (any_of (work, f + 1, size - 1)) {
+        return true;
+      }
+      work->trial[f] = false;
+    }
+  }
+  return false;
+}
+
+/* Is no set smaller?  Either all were looked at and nothing could be left out of the smallest, or
+   all that are smaller can be looked through: the first that clashes takes the set's place.     */
+static bool
+prove (struct work *work)
+{
+  const struct network *network = work->core->network;
+  size_t facts = 0, count = 0;
+  double sets = 0, of_size = 1;
+  for (size_t f = 0; f < network->facts; f++) {
+    facts += work->system->take[f] ? 1 : 0;
+    count += work->set[f] ? 1 : 0;
+  }
+  if (work->all && count == work->count) {
+    return true;
+  }
+  for (size_t size = 1; size < count; size++) {
+    of_size *= (double) (facts - size + 1) / (double) size;
+    sets += of_size;
+  }
+  if (sets > MOST_SETS || work->system->columns > SMALL) {
+    return false;
+  }
+  for (size_t size = 1; size < count; size++) {
+    memset (work->trial, 0, network->facts * sizeof *work->trial);
+    if (any_of (work, 0, size)) {
+      memcpy (work->set, work->trial, network->facts * sizeof *work->set);
+      work->part = network;
+      return true;
     }
   }
   return true;
@@ -398,9 +437,8 @@ find_suspects (struct work *work, struct conflict *conflict, struct fault *fault
   struct suspect *suspects = ARENA_ARRAY (work->keep, network->facts + 1, struct suspect);
   bool *all = ARENA_ARRAY (work->arena, network->facts + 1, bool);
   conflict->count = 0;
-  for (size_t f = 0; f < network->facts; f++) {
-    all[f] = true;
-  }
+  memcpy (all, work->system->take, network->facts * sizeof *all);
+  work->alone = false;
   for (size_t f = 0; f < network->facts; f++) {
     struct suspect *suspect = &suspects[conflict->count];
     bool done;
@@ -416,6 +454,7 @@ find_suspects (struct work *work, struct conflict *conflict, struct fault *fault
       done = suspect_need (work->core, work->part, work->set, suspect, fault);
     } else {
       done = suspect_need (work->core, network, all, suspect, fault);
+      work->alone = work->alone || suspect->plausible;
     }
     if (!done) {
       return false;
@@ -464,7 +503,13 @@ conflict_find (struct arena *keep, const struct core *core, struct solution *sol
   find_envelope (&work, conflict);
   find_terms (&work, conflict);
   add_causes (&work);
-  if (!thin_out (&work, fault) || !find_suspects (&work, conflict, fault)) {
+  if (!thin_out (&work, fault)) {
+    return false;
+  }
+  conflict->least = prove (&work);
+  if (!find_suspects (&work, conflict, fault)
+      || (!work.alone && work.surplus > 1
+          && !pairs_find (keep, core, work.set, conflict, fault))) {
     return false;
   }
   conflict->p = core->p;

@@ -19,9 +19,13 @@ bool conflict_find (struct arena *keep, const struct core *, struct solution *, 
 
 /* What the fact of SUSPECT would have to say for the rest (TAKE without it, in NETWORK, which is
    the core's or a part of it) to hold, of a composition its component; NAN where the rest does not
-   say.  Plausible: it could be, and no flow would be negative or nothing.                       */
+   say that it is one value.  Plausible: it could be, and no flow would be negative or nothing.   */
 bool suspect_need (const struct core *, const struct network *, const bool take[],
                    struct suspect *, struct fault *) MUST_CHECK;
+
+/* The same of COUNT facts that are left out of the core's together.  */
+bool suspects_need (const struct core *, struct suspect suspects[], size_t count,
+                    struct fault *) MUST_CHECK;
 
 /* The boundaries in KEEP and the facts in TAKE with their streams; the others are left without
    anything.                                                                                     */

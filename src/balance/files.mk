@@ -7,6 +7,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/bend.c \
   %D%/bounded.c \
   %D%/bounded.h \
+  %D%/circuits.c \
+  %D%/circuits.h \
   %D%/column_order.c \
   %D%/column_order.h \
   %D%/cone.c \
@@ -44,6 +46,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/network.h \
   %D%/null_space.c \
   %D%/null_space.h \
+  %D%/pairs.c \
+  %D%/pairs.h \
   %D%/program.c \
   %D%/program.h \
   %D%/rank.c \

@@ -55,6 +55,8 @@ struct suspect {
 /* A row of a fact in the combination that does not close: what it says, mol/s (mol/mol, 1), times
    FACTOR; of a composition the row of COMPONENT.                                                */
 struct conflict_term { size_t fact, component; double says, factor; };
+/* Two facts that would have to change together.  */
+struct suspect_pair { struct suspect at[2]; };
 struct conflict {
   size_t count;                  /* facts in the smallest set */
   const struct suspect *suspects;
@@ -67,6 +69,9 @@ struct conflict {
   double p;                      /* of agreement within the digits typed */
   bool least;                    /* no smaller set clashes; false: none of its facts can be left
                                     out, more is not known */
+  size_t pair_count; const struct suspect_pair *pairs;   /* where no fact alone can be blamed: those
+                                    that would change least */
+  size_t pairs_left;             /* as good as these, and not among them */
   size_t still;                  /* the facts hold only if nothing flows in this stream; `streams`:
                                     not even then */
 };

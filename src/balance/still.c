@@ -314,7 +314,7 @@ still_find (struct arena *keep, const struct network *network, const struct solv
                        .set = ARENA_ARRAY (arena, facts + 1, bool),
                        .trial = ARENA_ARRAY (arena, facts + 1, bool),
                        .each = cone_work (network) };
-  bool *must = spoken_of (arena, network), done = true;
+  bool *must = spoken_of (arena, network), done = true, split = false;
   struct absence absence;
   for (size_t f = 0; f < facts; f++) {
     work.usable[f] = network->fact[f].kind != FACT_FORM || !(fabs (network->fact[f].value) > 0);
@@ -326,7 +326,11 @@ still_find (struct arena *keep, const struct network *network, const struct solv
       looked++;
     }
   }
-  if (done && work.count > 1 && (!*conflict || work.count <= (*conflict)->count)) {
+  for (size_t b = 0; b < network->boundaries; b++) {
+    split = split || network->boundary[b].kind == BOUNDARY_SPLIT;
+  }
+  if (done && work.count > 1
+      && (!*conflict || work.count + (split ? 1 : 0) <= (*conflict)->count)) {
     work.target = work.best;
     *conflict = conflict_of (&work, prove (&work));
   }

@@ -48,18 +48,20 @@ keep_proportions (struct doubt *doubt, const struct fact *fact, size_t c)
 
 static struct doubt
 doubt_make (struct arena *arena, const struct network *network, const bool take[],
-            const struct suspect *suspect)
+            size_t count, const struct suspect suspects[])
 {
-  size_t most = network->facts + network->components;
-  const struct fact *fact = &network->fact[suspect->fact];
+  size_t most = network->facts + count * network->components;
   struct doubt doubt = { arena, *network, ARENA_ARRAY (arena, most, struct fact),
                          ARENA_ARRAY (arena, most, bool) };
   memcpy (doubt.facts, network->fact, network->facts * sizeof *doubt.facts);
   memcpy (doubt.take, take, network->facts * sizeof *doubt.take);
-  doubt.take[suspect->fact] = false;
   doubt.network.fact = doubt.facts;
-  if (fact->kind == FACT_COMPOSITION) {
-    keep_proportions (&doubt, fact, suspect->component);
+  for (size_t i = 0; i < count; i++) {
+    const struct fact *fact = &network->fact[suspects[i].fact];
+    doubt.take[suspects[i].fact] = false;
+    if (fact->kind == FACT_COMPOSITION) {
+      keep_proportions (&doubt, fact, suspects[i].component);
+    }
   }
   return doubt;
 }
@@ -134,42 +136,81 @@ flows_forward (const struct core *core, const double v[])
   return true;
 }
 
-/* Asks the rest, which agrees.  */
+/* How far a flow that the rest leaves open may reach.  */
+static void
+find_range (const struct core *rest, struct suspect *suspect)
+{
+  const struct fact *fact = &rest->network->fact[suspect->fact];
+  struct program *program;
+  if (fact->kind != FACT_FORM || rest->freedom == 0) {
+    return;
+  }
+  program = program_make (rest->arena, rest->system, rest->v, rest->system->null,
+                          rest->options->interrupted);
+  if (program_feasible (program)) {
+    struct range range = program_range (program, &fact->left);
+    suspect->least = range.least;
+    suspect->greatest = range.greatest;
+  }
+}
+
+/* Asks the rest, which agrees.  What it leaves open may be anything that is no reason against it:
+   of a flow it is known how far that reaches.                                                   */
 static void
 ask (const struct core *rest, struct suspect *suspect)
 {
+  bool can_be = true, part = is_part (rest, &rest->network->fact[suspect->fact]);
   double **v = core_generic (rest->arena, rest, POINTS);
   suspect->needed = say (rest, suspect, v[0]);
-  for (size_t i = 1; i < POINTS; i++) {
+  for (size_t i = 0; i < POINTS; i++) {
     double other = say (rest, suspect, v[i]);
+    can_be = can_be && other >= 0 && (!part || other <= 1 + same);
     if (!(fabs (other - suspect->needed) <= same * fabs (suspect->needed))) {
       suspect->needed = (double) NAN;
     }
   }
-  suspect->plausible = suspect->needed >= 0 && flows_forward (rest, v[0])
-                       && (!is_part (rest, &rest->network->fact[suspect->fact])
-                           || suspect->needed <= 1);
+  suspect->plausible = can_be && flows_forward (rest, v[0]);
+  if (isnan (suspect->needed) && suspect->plausible) {
+    find_range (rest, suspect);
+  }
 }
 
-bool
-suspect_need (const struct core *core, const struct network *network, const bool take[],
-              struct suspect *suspect, struct fault *fault)
+/* False: interrupted.  */
+static bool
+need (const struct core *core, const struct network *network, const bool take[], size_t count,
+      struct suspect suspects[], struct fault *fault)
 {
   struct arena *arena = arena_create ();
-  struct doubt doubt = doubt_make (arena, network, take, suspect);
+  struct doubt doubt = doubt_make (arena, network, take, count, suspects);
   struct fault own;
   const struct core *rest;
   bool stopped;
   fault_init (&own, arena);
   rest = core_make (arena, &doubt.network, doubt.take, core->options, &own);
   stopped = own.kind == MESSAGE_INTERRUPTED && !fault_set (fault, own.kind, NULL, NULL);
-  suspect->needed = (double) NAN;
-  suspect->plausible = false;
-  if (rest && rest->agree) {
-    ask (rest, suspect);
+  for (size_t i = 0; i < count; i++) {
+    suspects[i].needed = suspects[i].least = suspects[i].greatest = (double) NAN;
+    suspects[i].plausible = false;
+    if (rest && rest->agree) {
+      ask (rest, &suspects[i]);
+    }
   }
   arena_destroy (arena);
   return !stopped;
+}
+
+bool
+suspect_need (const struct core *core, const struct network *network, const bool take[],
+              struct suspect *suspect, struct fault *fault)
+{
+  return need (core, network, take, 1, suspect, fault);
+}
+
+bool
+suspects_need (const struct core *core, struct suspect suspects[], size_t count,
+               struct fault *fault)
+{
+  return need (core, core->network, core->system->take, count, suspects, fault);
 }
 
 /* Marks the streams of a form, and of a fact.  */

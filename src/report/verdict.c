@@ -146,8 +146,10 @@ report_verdict (struct text *out, const struct report_style *style,
     "impossible":[line],
     "practically_undetermined":[{"what","value","moves","unit"}],
     "hangs_on":[{"line","statement","what","least","greatest","unit"}],"settled_by":[[text]],
-    "gap":{"around","component","value","unit"}|null,"conflict":[line],"redundant":[line],
+    "gap":{"around","component","value","unit"}|null,"conflict":[line],
+    "smallest":bool|null,"redundant":[line],
     "suspects":[{"line","statement","needed","least","greatest","unit"}],
+    "pairs":[[suspect, suspect]],"pairs_left",
     "adjustments":[{"statement","component","stated","reconciled","uncertainty","unit","z"}],
     "global_test":{"chi2","degrees_of_freedom","critical","passed"}|null,"phrase","head","counts",
     "says":[[label, text]],"lists":[{"what","names":[text]}]}
@@ -247,20 +249,34 @@ loose_add (struct text *out, const struct balance_verdict *v)
 }
 
 static void
+suspect_add (struct text *out, const struct verdict_suspect *suspect)
+{
+  text_add_format (out, "{\"line\":%zu", suspect->line);
+  text_member (out, ",\"statement\":", suspect->statement);
+  json_figure (out, ",\"needed\":", suspect->needed);
+  json_figure (out, ",\"least\":", suspect->least);
+  json_figure (out, ",\"greatest\":", suspect->greatest);
+  text_member (out, ",\"unit\":", suspect->unit);
+  text_add_char (out, '}');
+}
+
+static void
 suspects_add (struct text *out, const struct balance_verdict *v)
 {
   text_add (out, ",\"suspects\":[");
   for (size_t i = 0; i < v->suspect_count; i++) {
-    const struct verdict_suspect *suspect = &v->suspects[i];
-    text_add_format (out, "%s{\"line\":%zu", i > 0 ? "," : "", suspect->line);
-    text_member (out, ",\"statement\":", suspect->statement);
-    json_figure (out, ",\"needed\":", suspect->needed);
-    json_figure (out, ",\"least\":", suspect->least);
-    json_figure (out, ",\"greatest\":", suspect->greatest);
-    text_member (out, ",\"unit\":", suspect->unit);
-    text_add_char (out, '}');
+    text_add (out, i > 0 ? "," : "");
+    suspect_add (out, &v->suspects[i]);
   }
-  text_add_char (out, ']');
+  text_add (out, "],\"pairs\":[");
+  for (size_t i = 0; i < v->pair_count; i++) {
+    text_add (out, i > 0 ? ",[" : "[");
+    suspect_add (out, &v->pairs[i].at[0]);
+    text_add_char (out, ',');
+    suspect_add (out, &v->pairs[i].at[1]);
+    text_add_char (out, ']');
+  }
+  text_add_format (out, "],\"pairs_left\":%zu", v->pairs_left);
 }
 
 static void
@@ -343,6 +359,8 @@ report_verdict_json (struct text *out, const struct balance_verdict *v)
     text_add (out, ",\"gap\":null");
   }
   texts_add (out, ",\"conflict\":", &v->conflict);
+  text_add (out, !v->clash ? ",\"smallest\":null" : v->smallest ? ",\"smallest\":true"
+                                                               : ",\"smallest\":false");
   texts_add (out, ",\"redundant\":", &v->redundant);
   suspects_add (out, v);
   adjustments_add (out, v);

@@ -31,6 +31,7 @@ struct verdict_suspect {
   const char *statement, *unit;
   double needed, least, greatest;
 };
+struct verdict_pair { struct verdict_suspect at[2]; };
 struct verdict_adjustment {
   const char *statement, *component, *unit;      /* component: null where it is no share */
   double stated, reconciled, uncertainty, z;
@@ -72,6 +73,8 @@ struct balance_verdict {
   const char *gap_around, *gap_component, *gap_unit;             /* null: no gap */
   double gap;
   size_t suspect_count; const struct verdict_suspect *suspects;
+  bool smallest;                                 /* no fewer lines clash */
+  size_t pair_count, pairs_left; const struct verdict_pair *pairs;
   size_t adjustment_count; const struct verdict_adjustment *adjustments;
   bool tested; double chi2, critical; size_t freedom; bool passed;
 };

@@ -2,7 +2,8 @@
 
 What hangs on last digits is held against the closed form of a mixer and its partial derivatives,
 in exact fractions.  Facts that hold only where nothing flows are held against all their subsets,
-looked through one by one with an exact simplex method of the test's own."""
+looked through one by one with an exact simplex method of the test's own.  Flows that clash are held
+against all subsets and all pairs of them, by elimination in exact fractions."""
 import itertools
 import random
 import sys
@@ -135,18 +136,17 @@ def feasible(rows):
     slacks = sum(sign == "<" for _, sign, _ in rows)
     table, basic, slack = [], [], 0
     for number, (row, sign, right) in enumerate(rows):
-        line = [Fraction(a) for a in row] + [Fraction(0)] * (slacks + len(rows)) \
-            + [Fraction(right)]
+        line = [Fraction(a) for a in row] + [Fraction(0)] * slacks + [Fraction(right)]
         if sign == "<":
             line[width + slack] = Fraction(1)
-            slack += 1
         if line[-1] < 0:
             line = [-a for a in line]
-        line[width + slacks + number] = Fraction(1)
+        own = sign == "<" and line[width + slack] > 0     # its slack will do to begin with
+        basic.append(width + slack if own else width + slacks + number)
+        slack += sign == "<"
         table.append(line)
-        basic.append(width + slacks + number)
-    cost = [-sum(line[j] for line in table) for j in range(width + slacks)] \
-        + [Fraction(0)] * len(rows) + [-sum(line[-1] for line in table)]
+    cost = [-sum(line[j] for line, b in zip(table, basic) if b >= width + slacks)
+            for j in range(width + slacks + 1)]
     while True:
         enter = next((j for j in range(width + slacks) if cost[j] < 0), None)
         if enter is None:
@@ -158,7 +158,7 @@ def feasible(rows):
         for line in table + [cost]:
             if line is not table[leave] and line[enter]:
                 by = line[enter]
-                line[:] = [a - by * b for a, b in zip(line, table[leave])]
+                line[:] = [a - by * b if b else a for a, b in zip(line, table[leave])]
         basic[leave] = enter
 
 
@@ -310,8 +310,182 @@ def closed(tap):
                  "no clash: " + name)
 
 
+# ---- Flows that clash ----
+
+def echelon(rows):
+    """The rows without what others say; None if they say 0 = something (the last column)."""
+    done = []
+    for row in rows:
+        row = list(row)
+        for lead, other in done:
+            if row[lead]:
+                by = row[lead]
+                row = [a - by * b for a, b in zip(row, other)]
+        lead = next((j for j, a in enumerate(row[:-1]) if a), None)
+        if lead is None:
+            if row[-1]:
+                return None
+            continue
+        row = [a / row[lead] for a in row]
+        done = [(l, [a - other[lead] * b for a, b in zip(other, row)] if other[lead] else other)
+                for l, other in done] + [(lead, row)]
+    return done
+
+
+class Meters:
+    """Whole flows of a plant of a few units, in whole numbers typed to three decimals; one or two
+    of the meters are wrong."""
+
+    def __init__(self, chance, name):
+        self.name = name
+        flows, edges, self.units = [chance.randint(2000, 9000)], [0], []
+        for _ in range(chance.randint(2, 4)):
+            inlet = max(edges, key=lambda s: flows[s] * chance.random())
+            edges.remove(inlet)
+            parts = sorted(chance.sample(range(1, flows[inlet]), chance.choice((1, 1, 2))))
+            outlets = [b - a for a, b in zip([0] + parts, parts + [flows[inlet]])]
+            new = list(range(len(flows), len(flows) + len(outlets)))
+            flows += outlets
+            edges += new
+            self.units.append((inlet, new))
+        self.streams = len(flows)
+        met = sorted(chance.sample(range(self.streams),
+                                   chance.randint(self.streams - 2, self.streams)))
+        self.meters = {s: Fraction(flows[s]) for s in met}
+        for s in chance.sample(met, chance.choice((1, 2, 2))):
+            self.meters[s] += chance.choice((-1, 1)) * chance.randint(5, 60)
+            self.meters[s] = abs(self.meters[s]) or Fraction(3)
+        self.balances = []
+        for inlet, outlets in self.units:
+            row = [Fraction(0)] * (self.streams + 1)
+            row[inlet] = Fraction(1)
+            for s in outlets:
+                row[s] = Fraction(-1)
+            self.balances.append(row)
+        done = dict(echelon(self.balances))
+        free = [j for j in range(self.streams) if j not in done]
+        self.reduced = {}                 # meters in terms of the streams no balance gives
+        for s, value in self.meters.items():
+            row = done.get(s)
+            self.reduced[s] = [-row[j] if row else Fraction(int(j == s)) for j in free] \
+                + [value - (row[-1] if row else 0)]
+
+    def line(self, s):
+        """A meter as typed."""
+        return "known %s-s%d = %.3f kmol/h" % (self.name, s, self.meters[s])
+
+    def text(self):
+        """The balance."""
+        units = ["  separate u%d: %s-s%d = %s" % (
+            n, self.name, inlet, " + ".join("%s-s%d" % (self.name, s) for s in outlets))
+            for n, (inlet, outlets) in enumerate(self.units)]
+        return solved(*units, *["  " + self.line(s) for s in self.meters], name=self.name)
+
+    def rows(self, which):
+        """The balances and the meters WHICH."""
+        rows = list(self.balances)
+        for s in which:
+            row = [Fraction(0)] * (self.streams + 1)
+            row[s], row[-1] = Fraction(1), self.meters[s]
+            rows.append(row)
+        return rows
+
+    def agree(self, which):
+        """Do the meters WHICH agree?"""
+        return echelon([self.reduced[s] for s in which]) is not None
+
+    def smallest(self):
+        """The size of the smallest set that clashes; 0: none does."""
+        for size in range(1, len(self.meters) + 1):
+            if any(not self.agree(which)
+                   for which in itertools.combinations(self.meters, size)):
+                return size
+        return 0
+
+    def says(self, which, s):
+        """What the meters WHICH say of stream S with no flow below nothing and all above it; None:
+        nothing certain, or no such flows."""
+        done = echelon(self.rows(which))
+        found = next((row for lead, row in done if lead == s), None)
+        if found is None or any(found[j] for j in range(self.streams) if j != s):
+            return None
+        rows = [(row[:-1], "=", row[-1]) for row in self.rows(which)]
+        rows += [([-Fraction(j == t) for j in range(self.streams)], "<", Fraction(-1, 10 ** 6))
+                 for t in range(self.streams)]
+        return found[-1] if feasible(rows) else None
+
+    def pairs(self):
+        """Pairs at fault where no single meter is, with what each would have to say."""
+        found = {}
+        for pair in itertools.combinations(self.meters, 2):
+            rest = [s for s in self.meters if s not in pair]
+            if self.agree(rest):
+                said = [self.says(rest, s) for s in pair]
+                if None not in said:
+                    found[pair] = said
+        return found
+
+
+def look_pairs(meters, balance):
+    """Those told are pairs, with what they would say, and none is left out."""
+    pairs = meters.pairs()
+    lines = {meters.line(s): s for s in meters.meters}
+    wrong, alone = [], False
+    for s in meters.meters:
+        rest = [t for t in meters.meters if t != s]
+        alone = alone or (meters.agree(rest) and meters.says(rest, s) is not None)
+    if alone:
+        return ["a meter alone can be blamed, and pairs are told"] if balance["pairs"] else []
+    count = len(balance["pairs"]) + balance["pairs_left"]
+    if count != len(pairs):
+        wrong.append("%d pairs, not %d" % (count, len(pairs)))
+    for pair in balance["pairs"]:
+        which = tuple(sorted(lines[one["statement"]] for one in pair))
+        said = {lines[one["statement"]]: one["needed"] for one in pair}
+        if which not in pairs:
+            wrong.append("%r are no pair" % (which,))
+            continue
+        wrong += [session.off(said[s], float(value), 1e-6 * float(value) + 1e-6, "abs")
+                  for s, value in zip(which, pairs[which])]
+    return [line for line in wrong if line]
+
+
+def look_meters(meters, balance):
+    """A set of least size that clashes, and the pairs."""
+    size = meters.smallest()
+    if size == 0:
+        return [] if balance["status"] != "contradictory" else ["no clash"]
+    if balance["status"] != "contradictory":
+        return ["%s, smallest set %d" % (balance["status"], size)]
+    which = [int(line.split("-s")[1].split(" ")[0]) for line in balance["conflict"]]
+    wrong = []
+    if len(which) != size or meters.agree(which) or not balance["smallest"]:
+        wrong.append("%r (smallest %r), of least size %d" % (which, balance["smallest"], size))
+    return wrong + look_pairs(meters, balance)
+
+
+def metered(tap):
+    """Meters at random."""
+    chance = random.Random(SEED)
+    some = [Meters(chance, "w%d" % i) for i in range(220)]
+    balances, wrong = verdicts([m.text() for m in some])
+    paired = surplus = 0
+    for meters in some:
+        if meters.name in balances:
+            balance = balances[meters.name]
+            wrong += ["%s: %s\n%s" % (meters.name, line, meters.text())
+                      for line in look_meters(meters, balance)]
+            paired += bool(balance["pairs"])
+            surplus = max(surplus, balance["surplus"])
+    if paired < 40 or surplus < 4:
+        wrong.append("%d with pairs, at most %d to spare: the draw tells nothing" % (paired,
+                                                                                    surplus))
+    tap.tell(wrong, "%d plants of meters against all sets and pairs, seed %d" % (len(some), SEED))
+
+
 def main():
     tap = session.Tap()
+    metered(tap)
     chains(tap)
     parted(tap)
     closed(tap)

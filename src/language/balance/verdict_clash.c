@@ -50,6 +50,9 @@ room_text (struct verdict_maker *m, const struct suspect *suspect)
   const char *part = fact->kind != FACT_COMPOSITION ? ""
                      : arena_format (m->arena, "%s ", component_text (m->plant,
                                                                       suspect->component));
+  if (isnan (suspect->least)) {
+    return "the others leave it open";
+  }
   const char *least = figure_text (m->arena, suspect->least * f->per);
   if (isinf (suspect->greatest)) {
     return suspect->least > 0 ? arena_format (m->arena, "%s%s %s or more", part, least, f->unit)
@@ -119,6 +122,52 @@ is_told (const struct verdict_maker *m, const struct conflict *conflict, size_t 
   return false;
 }
 
+/* How sure it is that no smaller set clashes, where there is a choice.  */
+static void
+tell_size (struct verdict_maker *m, const struct conflict *conflict)
+{
+  if (m->solution->count.surplus > 1 || conflict->still < m->plant->stream_count) {
+    verdict_fact (m, "this set", conflict->least ? "a smallest one: no fewer lines clash"
+                  : "no line of it can be left out; whether fewer others clash is not known");
+  }
+}
+
+static const char *
+pair_side (struct verdict_maker *m, const struct suspect *suspect)
+{
+  const struct plant_fact *f = &m->plant->fact[suspect->fact];
+  return f->line == 0 ? arena_format (m->arena, "%s: %s", f->text, needed_text (m, suspect))
+         : arena_format (m->arena, "%zu  %s: %s", f->line, f->text, needed_text (m, suspect));
+}
+
+/* Pairs of lines at fault together.  */
+static void
+tell_pairs (struct verdict_maker *m, const struct conflict *conflict)
+{
+  struct verdict_pair *pairs = ARENA_ARRAY (m->arena, conflict->pair_count, struct verdict_pair);
+  for (size_t i = 0; i < conflict->pair_count; i++) {
+    const struct suspect_pair *pair = &conflict->pairs[i];
+    for (int side = 0; side < 2; side++) {
+      const struct plant_fact *f = &m->plant->fact[pair->at[side].fact];
+      pairs[i].at[side] = (struct verdict_suspect) {
+        f->line, f->text, f->unit, pair->at[side].needed * f->per, UNSTATED, UNSTATED
+      };
+    }
+    verdict_fact (m, i ? "or" : "two of them at fault",
+                  arena_format (m->arena, "%s; %s", pair_side (m, &pair->at[0]),
+                                pair_side (m, &pair->at[1])));
+  }
+  if (conflict->pair_count > 1) {
+    verdict_fact (m, "", conflict->pairs_left > 0
+                  ? arena_format (m->arena, "or %zu pairs more; they tie, the smallest changes first",
+                                  conflict->pairs_left)
+                  : "these pairs tie, the smallest changes first");
+  }
+  m->verdict->pairs = pairs;
+  m->verdict->pair_count = conflict->pair_count;
+  m->verdict->pairs_left = conflict->pairs_left;
+}
+
 void
 verdict_clash (struct verdict_maker *m)
 {
@@ -150,6 +199,9 @@ verdict_clash (struct verdict_maker *m)
       if (m->plant->fact[conflict->suspects[i].fact].line == line && !is_told (m, conflict, i)) {
         tell_line (m, conflict, i);
       }
+  tell_size (m, conflict);
+  tell_pairs (m, conflict);
+  v->smallest = conflict->least;
   v->conflict = text_list_done (&lines);
   v->suspects = suspects;
   v->suspect_count = count;
