@@ -17,9 +17,10 @@
 
 struct arena; struct fault;
 
-/* The clash of facts of NETWORK that hold a stream of SOLUTION, which is classified, at nothing,
-   or that leave only negative flows.  It takes the place of *CONFLICT (null: none) where it is no
-   larger, with splits where it is smaller; a network that is too large is not looked through.  False: interrupted.               */
+/* The clash of facts of NETWORK that hold a stream of SOLUTION, which is classified, at nothing, or
+   that leave only negative flows.  It takes the place of *CONFLICT (null: none) where it is no
+   larger, with splits where it is smaller; a network that is too large is not looked through.
+   False: interrupted.                                                                           */
 bool still_find (struct arena *keep, const struct network *, const struct solve_options *,
                  const struct solution *, const struct conflict **conflict, struct fault *)
   MUST_CHECK;

@@ -148,9 +148,8 @@ find_range (const struct core *rest, struct suspect *suspect)
   program = program_make (rest->arena, rest->system, rest->v, rest->system->null,
                           rest->options->interrupted);
   if (program_feasible (program)) {
-    struct range range = program_range (program, &fact->left);
-    suspect->least = range.least;
-    suspect->greatest = range.greatest;
+    suspect->least = program_least (program, &fact->left);
+    suspect->greatest = program_greatest (program, &fact->left);
   }
 }
 

@@ -159,8 +159,8 @@ tell_pairs (struct verdict_maker *m, const struct conflict *conflict)
   }
   if (conflict->pair_count > 1) {
     verdict_fact (m, "", conflict->pairs_left > 0
-                  ? arena_format (m->arena, "or %zu pairs more; they tie, the smallest changes first",
-                                  conflict->pairs_left)
+                  ? arena_format (m->arena, "or %zu pairs more; they tie, the smallest changes "
+                                  "first", conflict->pairs_left)
                   : "these pairs tie, the smallest changes first");
   }
   m->verdict->pairs = pairs;
