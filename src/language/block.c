@@ -2,6 +2,7 @@
 #include "language/session_private.h"
 
 #include <string.h>
+#include "language/kept.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -106,17 +107,19 @@ quote_line (const struct open_block *b, size_t i, struct fault *fault)
 /* A place in the source of a block is that of one of its lines, which was typed earlier and may
    have gone on over several.                                                                    */
 void
-block_place (const struct session *session, struct fault *fault)
+block_place (struct session *session, struct fault *fault)
 {
-  const struct open_block *b = &session->block;
+  struct open_block *b = &session->block;
   int line = fault->at.line > 0 ? fault->at.line : 1;
   size_t i = 0;
   while (i < b->count && line > lines_in (b->line[i])) {
     line -= lines_in (b->line[i++]);
   }
+  b->at_fault = 0;
   if (!b->arena || i >= b->count) {
     return;
   }
+  b->at_fault = i;
   int shift = line == 1 ? b->at[i].first - 1 : 0;
   fault->at.line = b->at[i].line + line - 1;
   fault->at.first += shift;
@@ -124,6 +127,40 @@ block_place (const struct session *session, struct fault *fault)
   if (line == 1) {
     quote_line (b, i, fault);
   }
+}
+
+/* ---- Taking lines back ---- */
+
+static void
+leave_out (struct open_block *b, size_t i)
+{
+  b->count--;
+  memmove (b->line + i, b->line + i + 1, (b->count - i) * sizeof *b->line);
+  memmove (b->at + i, b->at + i + 1, (b->count - i) * sizeof *b->at);
+}
+
+void
+block_undo (struct session *session, struct result *result)
+{
+  struct open_block *b = &session->block;
+  result_remark (result, MESSAGE_NOTE_UNDONE,
+                 arena_string (result->arena, b->line[b->count - 1]), NULL);
+  leave_out (b, b->count - 1);
+  if (b->count == 0) {
+    block_drop (session);
+  }
+}
+
+bool
+session_reopened (struct session *session, struct result *result)
+{
+  const struct open_block *b = &session->block;
+  if (!b->arena) {
+    return false;
+  }
+  result_remark (result, MESSAGE_NOTE_BLOCK_OPEN, arena_string (result->arena, b->name),
+                 b->at_fault > 0 ? "without that line: type it anew" : "with all its lines");
+  return true;
 }
 
 /* ---- The lines, and the end ---- */
@@ -209,14 +246,16 @@ block_close (struct session *session, const struct statement *end, struct result
              struct fault *fault)
 {
   struct open_block *b = &session->block;
-  bool done = false;
+  bool done;
   if (!b->arena) {
     return fault_set_at (fault, MESSAGE_BLOCK_LINE, end->at, end->source, "no block is open");
   }
+  b->at_fault = 0;
   if (b->spoilt) {
-    fault_set_at (fault, MESSAGE_BLOCK_SPOILT, end->at, arena_string (fault->arena, b->name),
-                  NULL);
-  } else if (b->kind == BLOCK_BALANCE) {
+    return fault_set_at (fault, MESSAGE_BLOCK_SPOILT, end->at,
+                         arena_string (fault->arena, b->name), NULL);
+  }
+  if (b->kind == BLOCK_BALANCE) {
     done = close_balance (session, end, result, fault);
     if (!done && !fault->quote) {
       quote_line (b, 0, fault);
@@ -230,6 +269,15 @@ block_close (struct session *session, const struct statement *end, struct result
       quote_line (b, 0, fault);         /* the name's fault: another leans on it */
     }
   }
+  if (!done) {
+    if (b->at_fault > 0) {
+      leave_out (b, b->at_fault);
+    }
+    return false;
+  }
+  for (size_t i = 0; i < b->count; i++) {
+    kept_log (session, b->line[i], false);
+  }
   block_drop (session);
-  return done;
+  return true;
 }

@@ -151,10 +151,9 @@ kept_add_row (struct session *s, const struct result *result, const struct answe
 }
 
 void
-kept_log (struct session *s, const struct statement *statement)
+kept_log (struct session *s, const char *text, bool opens)
 {
   struct kept *kept = s->kept;
-  const bool opens = statement->kind == STATEMENT_OPEN;
   if (kept->line_count == KEPT_LINES_MOST) {
     kept->lines_beyond++;
     return;
@@ -164,7 +163,7 @@ kept_log (struct session *s, const struct statement *statement)
     kept->last_line = &kept->lines;
   }
   struct kept_line *line = ARENA_NEW (kept->log, struct kept_line);
-  line->text = arena_string (kept->log, opens ? statement->text : statement->source);
+  line->text = arena_string (kept->log, text);
   if (opens) {
     line->next = kept->opened;
     kept->opened = line;

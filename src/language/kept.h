@@ -57,8 +57,8 @@ void kept_add (struct session *, const struct asked *, const struct result *);
 void kept_extend (struct session *, const struct result *, const struct step *);
 /* Rows behind those of the answer in RESULT, which was just kept; in its arena.  */
 void kept_add_row (struct session *, const struct result *, const struct answer *);
-/* Keeps the statement that ran, or the file it opened, for a note.  */
-void kept_log (struct session *, const struct statement *);
+/* Keeps a statement that ran, or the name of the file it opened, for a note.  */
+void kept_log (struct session *, const char *text, bool opens);
 /* Takes back what was kept behind the first COUNT lines: the file that held them failed.  */
 void kept_unlog (struct session *, size_t count);
 /* Makes kept answers independent of definitions, which are about to change.  */

@@ -150,6 +150,13 @@ only_prints (enum statement_kind kind)
   return only_looks (kind) && kind != STATEMENT_ASK && kind != STATEMENT_MONTECARLO;
 }
 
+/* The lines of a block are kept by its end, as it takes them.  */
+static bool
+is_block_line (const struct session *s, const struct statement *statement, bool in_block)
+{
+  return statement->kind != STATEMENT_END && (in_block || session_block (s) != BLOCK_NONE);
+}
+
 bool
 session_run (struct session *s, const struct statement *statement, struct result *result,
              struct fault *fault)
@@ -161,13 +168,15 @@ session_run (struct session *s, const struct statement *statement, struct result
     kept_settle (s);
   }
   const size_t before = s->kept->line_count;
+  const bool in_block = session_block (s) != BLOCK_NONE;
   bool asks = statement->kind == STATEMENT_ASK || statement->kind == STATEMENT_MONTECARLO;
   bool done = asks ? ask (s, statement, result, fault)
                    : command_run (s, statement, result, fault);
   if (!done) {
     kept_unlog (s, before);
-  } else if (!only_prints (statement->kind)) {
-    kept_log (s, statement);
+  } else if (!only_prints (statement->kind) && !is_block_line (s, statement, in_block)) {
+    const bool opens = statement->kind == STATEMENT_OPEN;
+    kept_log (s, opens ? statement->text : statement->source, opens);
   }
   return done;
 }

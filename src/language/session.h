@@ -27,6 +27,9 @@ enum block session_block (const struct session *);
 void session_leave_block (struct session *);             /* Ctrl-C in a block drops it */
 /* A line of the block failed where nobody types it anew: its `end` will refuse the whole.  */
 void session_spoil_block (struct session *);
+/* An `end` that failed leaves its block open, without the line at fault.  Is one open, and what
+   there is to say of it?                                                                        */
+bool session_reopened (struct session *, struct result *);
 
 /* Runs one statement; what it answers is put into RESULT (already initialised), in RESULT's
    arena.  False with FAULT.                                                                     */

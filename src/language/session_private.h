@@ -66,6 +66,7 @@ struct open_block {
   const char **line;                       /* the statements so far, the first one included */
   struct place *at;                        /* where each was typed */
   size_t count, room;
+  size_t at_fault;                         /* the line the last fault was in; 0: none of its own */
   bool spoilt;                             /* a line of it failed where nobody can type it anew */
 };
 
@@ -188,12 +189,14 @@ bool block_add (struct session *, const struct statement *, struct fault *) MUST
 bool block_close (struct session *, const struct statement *end, struct result *,
                   struct fault *) MUST_CHECK;
 void block_drop (struct session *);
+/* Takes back the last line of the block that is open, which is said.  */
+void block_undo (struct session *, struct result *);
 /* The streams a balance made go, but for those that others lean on.  */
 void balance_drop_made (struct session *, const char *balance);
 /* The balance that a bare `solve` means from now on.  */
 void balance_remember (struct session *, const char *name);
 /* A place counted in the source of the open block, counted where the line was typed.  */
-void block_place (const struct session *, struct fault *);
+void block_place (struct session *, struct fault *);
 
 /* ---- Undo (undo.c) ---- */
 

@@ -179,10 +179,11 @@ run_typed_line (struct prompt *prompt, struct terminal *terminal, int first)
 
   if (left_out > 0)
     print_left_out (prompt, left_out);
+  script->reopened = false;
   script_run_line (script, &line);
   output_flush (script->output);
-  if (interrupt_pending ())
-    terminal_drop_pasted (terminal);
+  if (interrupt_pending () || script->reopened)
+    terminal_drop_pasted (terminal);    /* what is left of a paste would go on in the block */
   interrupt_forget ();
 }
 

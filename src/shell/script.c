@@ -126,6 +126,21 @@ run_statement (struct script *script, const struct statement *statement, const c
   return true;
 }
 
+/* An `end` that failed: nobody mends the block of a file; at the prompt it stays open.  */
+static void
+settle_block (struct script *script, const struct script_line *line)
+{
+  struct result result;
+
+  if (line->file != NULL) {
+    session_leave_block (script->session);
+    return;
+  }
+  result_init (&result, script->arena, "end");
+  script->reopened = session_reopened (script->session, &result);
+  output_result (script->output, &result, false);
+}
+
 /* After a fault: may the rest of the line run?  Not if the rest could stand in a block that was
    not opened, or outside one that was not closed.                                               */
 static bool
@@ -163,6 +178,8 @@ script_run_line (struct script *script, const struct script_line *line)
       continue;
     } else if (!is_stopped (line)) {
       tell_fault (script, line, &fault, statement->source, answered);
+      if (statement->kind == STATEMENT_END)
+        settle_block (script, line);
     }
     if (!may_go_on (script, parser))
       break;

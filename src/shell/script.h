@@ -20,6 +20,7 @@ struct script {
   size_t input_count;
   bool keep_going;
   bool failed;                          /* something went wrong so far */
+  bool reopened;                        /* an `end` failed and left its block to be mended */
   bool quit;                            /* a statement ended the session */
 };
 

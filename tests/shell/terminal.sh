@@ -80,6 +80,54 @@ type \x04
 end 0
 END
 
+plays "an end that fails costs one line and no more; undo takes lines back" << 'END'
+see gas | 
+type let kept = 3 kg/h\r
+see gas | 
+type balance tee\r
+see    || 
+type split fork: main = east + west\r
+see    || 
+type known mein = 7 kg/h\r
+see    || 
+type help known\r
+see _/ known
+see    || 
+type end\r
+see known mein = 7 kg/h
+see error: the balance has nothing called 'mein'
+see note: tee stays open, without that line: type it anew
+see    || 
+type known main = 7 kg/h\r
+see    || 
+type known west = 5 kg/h\r
+see    || 
+type undo\r
+see note: taken back: known west = 5 kg/h
+see    || 
+type known east = 3 kg/h\r
+see    || 
+type end\r
+see gas | 
+type solve in kg/h\r
+see west .....   4.00000
+see gas | 
+type balance tin\r
+see    || 
+type undo\r
+see note: taken back: balance tin
+see gas | 
+type note "open.md"\r
+see written
+see gas | 
+type \x04
+end 0
+END
+sed -n 's/^    //p' open.md > open.gw
+tell "$(printf '%s\n' 'let kept = 3 kg/h' 'balance tee' 'split fork: main = east + west' \
+        'known main = 7 kg/h' 'known east = 3 kg/h' 'end' 'solve in kg/h' | diff - open.gw)" \
+  "a note has the lines that were taken, and can be run again"
+
 plays "opening line, prompt, answer, end of input" << 'END'
 see gaswright 0.1   barometer 1.01325 bar (standard)   volumes ideal-gas   F1 help\n\ngas | 
 type 12 kg in g\r

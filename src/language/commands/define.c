@@ -65,6 +65,10 @@ bool
 command_undo (struct session *session, const struct statement *s, struct result *result,
               struct fault *fault)
 {
+  if (session_block (session) != BLOCK_NONE) {
+    block_undo (session, result);
+    return true;
+  }
   if (session->groups_open > 0) {
     fault_set_at (fault, MESSAGE_UNDO_EMPTY, s->at, NULL, NULL);
     fault_hint (fault, "a file that is opened is one change: 'undo' behind 'open' takes it back");

@@ -436,9 +436,10 @@ bool
 parse_statement (struct parser *p, struct statement *statement)
 {
   /* statement = WORD ... | sum [ "in" target { "," target } ]  */
-  if (p->block == BLOCK_BALANCE)
+  const bool anywhere = at_word (p, "undo") || at_word (p, "help");
+  if (p->block == BLOCK_BALANCE && !anywhere)
     return parse_balance_line (p, statement);
-  if (p->block == BLOCK_SHEET)
+  if (p->block == BLOCK_SHEET && !anywhere)
     return parse_sheet_line (p, statement);
   if (at_word (p, "end"))
     return fail (p, MESSAGE_BLOCK_LINE, p->token.at, "end", "no block is open");
