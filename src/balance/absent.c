@@ -17,11 +17,16 @@ mark (struct absence *absence, size_t column, size_t cause)
 }
 
 static void
-undeclared (const struct network *network, struct absence *absence)
+undeclared (const struct network *network, const bool take[], struct absence *absence)
 {
   for (size_t i = 0; i < network->streams * network->components; i++) {
+    size_t by = network->denied ? network->denied[i] : NOWHERE;
     if (network->possible && !network->possible[i]) {
-      mark (absence, i, NOWHERE);
+      if (by == NOWHERE) {
+        mark (absence, i, NOWHERE);
+      } else if (take[by]) {
+        mark (absence, i, by);
+      }
     }
   }
 }
@@ -195,7 +200,7 @@ absence_spread (struct arena *arena, const struct network *network, const bool t
                              ARENA_ARRAY (arena, columns, size_t) };
   double *have = ARENA_ARRAY (arena, columns, double);
   bool news = true, forwards = true;
-  undeclared (network, &absence);
+  undeclared (network, take, &absence);
   for (; news; forwards = !forwards) {
     news = false;
     for (size_t f = 0; f < network->facts; f++) {

@@ -408,11 +408,40 @@ find_terms (const struct work *work, struct conflict *conflict)
   conflict->terms = terms;
 }
 
+/* The component that a composition without multipliers leaves out and another fact of the set
+   speaks of; NOWHERE.                                                                           */
+static size_t
+missing_component (const struct work *work, size_t f)
+{
+  const struct network *network = work->core->network;
+  const struct fact *fact = &network->fact[f];
+  for (size_t i = 0; i < work->rows; i++) {
+    if (work->system->rows.row[work->system->structure + i].of == f
+        && fabs (work->lambda[i]) > 0) {
+      return NOWHERE;
+    }
+  }
+  for (size_t g = 0; g < network->facts; g++) {
+    for (size_t t = 0; work->set[g] && t < network->fact[g].left.count; t++) {
+      size_t column = network->fact[g].left.terms[t].column, c = column % network->components;
+      bool single = 2 * network->fact[g].left.count <= network->components;
+      if (column < network->streams * network->components && single && !(fact->fractions[c] > 0)) {
+        return c;
+      }
+    }
+  }
+  return NOWHERE;
+}
+
 /* The component of a composition that is most at odds: that of the gap, else the one with the
    greatest multiplier.                                                                          */
 static size_t
 odd_component (const struct work *work, size_t f, const struct conflict *conflict)
 {
+  size_t missing = missing_component (work, f);
+  if (missing != NOWHERE) {
+    return missing;
+  }
   const struct network *network = work->core->network;
   const struct fact *fact = &network->fact[f];
   size_t found = 0;

@@ -50,6 +50,8 @@ struct fact {
   size_t stream, of;
   const double *fractions;       /* of a composition, by component; adding up to 1 */
   const double *fractions_u, *fractions_rounding;
+  bool absence;                  /* a form of value 0 that says what a stream cannot hold: neither a
+                                    known nor a relation, and no row */
   double weight;                 /* what a stated figure is worth when something must be doubted;
                                     1 as a rule */
 };
@@ -57,6 +59,8 @@ struct fact {
 struct network {
   size_t components, streams, boundaries, facts;
   const bool *possible;          /* [s * components + c]: may the stream hold it? */
+  const size_t *denied;          /* likewise: the fact without which it might, or (size_t) -1;
+                                    null: what it may not hold hangs on none */
   const double *molar_mass;      /* kg/mol; null in a balance of whole flows */
   const struct boundary *boundary;
   const struct fact *fact;

@@ -53,6 +53,9 @@ count_up (const struct core *core)
   for (size_t f = 0; f < network->facts; f++) {
     const struct fact *fact = &network->fact[f];
     size_t parts = fact->kind == FACT_COMPOSITION ? system_parts (system, fact->stream) : 2;
+    if (fact->absence) {
+      continue;
+    }
     if (system->take[f] && absence_is_all (network, &system->absence, f, have)) {
       continue;                         /* its variables are not counted either */
     }

@@ -136,25 +136,35 @@ flows_forward (const struct core *core, const double v[])
   return true;
 }
 
-/* How far a flow that the rest leaves open may reach.  */
+/* How far a fact that the rest leaves open may reach: a flow, or a part of what is one number at
+   the COUNT generic solutions V.                                                                */
 static void
-find_range (const struct core *rest, struct suspect *suspect)
+find_range (const struct core *rest, size_t count, double *const v[], struct suspect *suspect)
 {
   const struct fact *fact = &rest->network->fact[suspect->fact];
-  struct program *program;
-  if (fact->kind != FACT_FORM || rest->freedom == 0) {
+  size_t first = fact->stream * rest->network->components;
+  bool composed = fact->kind == FACT_COMPOSITION;
+  struct term own = { composed ? first + suspect->component : 0, 1 };
+  struct form left = composed ? (struct form) { 1, &own } : fact->left;
+  double whole = 1;
+  for (size_t i = 0; i < count && fact->kind != FACT_FORM; i++) {
+    double here = composed ? system_total (rest->system, v[i], fact->stream)
+                           : form_value (&fact->right, v[i]);
+    bool other = i > 0 && !(fabs (here - whole) <= same * fabs (whole));
+    whole = other ? (double) NAN : here;
+  }
+  if (fact->kind == FACT_SHARE || rest->freedom == 0 || !(whole > 0)) {
     return;
   }
-  program = program_make (rest->arena, rest->system, rest->v, rest->system->null,
-                          rest->options->interrupted);
+  struct program *program = program_make (rest->arena, rest->system, rest->v, rest->system->null,
+                                          rest->options->interrupted);
   if (program_feasible (program)) {
-    suspect->least = program_least (program, &fact->left);
-    suspect->greatest = program_greatest (program, &fact->left);
+    suspect->least = fmax (program_least (program, &left) / whole, 0);
+    suspect->greatest = program_greatest (program, &left) / whole;
   }
 }
 
-/* Asks the rest, which agrees.  What it leaves open may be anything that is no reason against it:
-   of a flow it is known how far that reaches.                                                   */
+/* Asks the rest, which agrees.  What it leaves open is no reason against the fact.  */
 static void
 ask (const struct core *rest, struct suspect *suspect)
 {
@@ -170,7 +180,7 @@ ask (const struct core *rest, struct suspect *suspect)
   }
   suspect->plausible = can_be && flows_forward (rest, v[0]);
   if (isnan (suspect->needed) && suspect->plausible) {
-    find_range (rest, suspect);
+    find_range (rest, POINTS, v, suspect);
   }
 }
 
@@ -245,6 +255,7 @@ network_part (struct arena *arena, const struct network *network, const bool kee
   struct boundary *boundary = ARENA_ARRAY (arena, network->boundaries + 1, struct boundary);
   size_t flows = network->streams * network->components;
   bool *possible = ARENA_ARRAY (arena, flows + 1, bool);
+  size_t *denied = ARENA_ARRAY (arena, flows + 1, size_t);
   bool *used = ARENA_ARRAY (arena, network->streams + 1, bool);
   for (size_t b = 0; b < network->boundaries; b++) {
     boundary[b] = network->boundary[b];
@@ -266,9 +277,11 @@ network_part (struct arena *arena, const struct network *network, const bool kee
   }
   for (size_t j = 0; j < flows; j++) {
     possible[j] = used[j / network->components] && (!network->possible || network->possible[j]);
+    denied[j] = used[j / network->components] && network->denied ? network->denied[j] : NOWHERE;
   }
   *part = *network;
   part->boundary = boundary;
   part->possible = possible;
+  part->denied = denied;
   return part;
 }

@@ -418,7 +418,8 @@ system_make (struct arena *arena, const struct network *network, const bool take
   }
   system->structure = making.builder.rows.count;
   for (size_t f = 0; f < network->facts; f++) {
-    if (take[f] && !absence_is_all (network, &system->absence, f, have)) {
+    if (take[f] && !network->fact[f].absence
+        && !absence_is_all (network, &system->absence, f, have)) {
       fact_rows (&making, f);
     }
   }

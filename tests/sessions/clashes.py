@@ -483,8 +483,60 @@ def metered(tap):
     tap.tell(wrong, "%d plants of meters against all sets and pairs, seed %d" % (len(some), SEED))
 
 
+# ---- What is said not to be there ----
+
+NOTHINGS = [
+    # What cannot leave cannot enter: 40 % of 100 is CO2, which one of the two would have to take.
+    ("two absences",
+     ("  separate membrane: feed = product + tail", "  components CH4, CO2",
+      "  known feed = 100 kmol/h", "  known CH4 of feed = 60 mol%", "  absent CO2 of product",
+      "  absent CO2 of tail"),
+     {2: 0, 3: 100, 4: 40, 5: 40}),
+    # 2 % of a tail of 20 must come in with 100; a product of 80 could hold nothing else.
+    ("a composition that leaves it out",
+     ("  separate membrane: feed = product + tail", "  components CH4, CO2, H2S",
+      "  known feed = 100 kmol/h of (CH4 60, CO2 40 mol%)", "  known H2S of tail = 2 mol%",
+      "  known tail = 20 kmol/h"),
+     {2: (0.4, 80.4), 3: 0, 4: 0}),
+    # Two streams further on; of the feed 20 leave before.
+    ("absences further up",
+     ("  separate membrane: feed = product + tail", "  mix dosing: tail + blown = stack",
+      "  components CH4, CO2, H2S", "  absent H2S of feed", "  absent H2S of blown",
+      "  known feed = 100 kmol/h", "  known product = 20 kmol/h", "  known blown = 20 kmol/h",
+      "  known H2S of stack = 2 kmol/h"),
+     {3: (2, 22), 4: 2, 8: 0}),
+    # Nothing comes in; without that line as much as leaves, or more.
+    ("a flow of nothing",
+     ("  separate membrane: feed = product + tail", "  components CH4, CO2",
+      "  known feed = 0 kmol/h", "  known product = 70 kmol/h"),
+     {2: (70, None), 3: 0}),
+]
+
+
+def nothings(tap):
+    """By hand: the lines that clash with an absence, and what the others leave each to say."""
+    for name, lines, want in NOTHINGS:
+        balance = verdicts([solved(*lines)])[0]["case"]
+        wrong = []
+        if sorted(balance["conflict"]) != sorted(lines[i].strip() for i in want):
+            wrong.append("the set is %r" % balance["conflict"])
+        said = {one["statement"]: one for one in balance["suspects"]}
+        for i, value in want.items():
+            one = said.get(lines[i].strip())
+            if one is None:
+                wrong.append("not at fault: " + lines[i])
+            elif not isinstance(value, tuple):
+                wrong.append(session.off(one["needed"], value, 1e-7, "abs"))
+            else:
+                wrong.append(session.off(one["least"], value[0], 1e-7, "abs"))
+                wrong.append(session.off(one["greatest"], value[1], 1e-7, "abs") if value[1]
+                             else "" if one["greatest"] is None else "%r" % one)
+        tap.tell([line for line in wrong if line], "a clash with " + name)
+
+
 def main():
     tap = session.Tap()
+    nothings(tap)
     metered(tap)
     chains(tap)
     parted(tap)

@@ -96,7 +96,7 @@ card_of_equations (const struct plant *plant, struct result *result)
   size_t last = (size_t) -1;
   for (size_t f = 0; f < plant->fact_count; f++) {
     const struct plant_fact *fact = &plant->fact[f];
-    if (fact->line > 0 && fact->line == last) {
+    if ((fact->line > 0 && fact->line == last) || plant->network.fact[f].absence) {
       continue;
     }
     last = fact->line;
@@ -114,6 +114,11 @@ form_text (struct arena *arena, const struct plant *plant, const struct form *fo
   const char *text = before;
   for (size_t i = 0; i < form->count; i++) {
     double k = times * form->terms[i].coefficient;
+    size_t column = form->terms[i].column;
+    if (column < plant->stream_count * plant->network.components
+        && !plant->network.possible[column]) {
+      continue;
+    }
     text = arena_format (arena, "%s%s%s %s", text, *text ? "  " : "",
                          arena_format (arena, "%+.6g", k),
                          column_name (arena, plant, form->terms[i].column));
@@ -134,8 +139,7 @@ matrix_rows (struct result *result, struct card *card, const struct plant *plant
         size_t s = side ? boundary->outlets[i] : boundary->inlets[i];
         struct term term = { plant_column (plant, s, c), side ? -1 : 1 };
         struct form form = { 1, &term };
-        text = plant->network.possible[term.column] ? form_text (arena, plant, &form, 1, text)
-                                                    : text;
+        text = form_text (arena, plant, &form, 1, text);
       }
     }
     for (size_t k = 0; k < boundary->reaction_count; k++) {
@@ -187,6 +191,9 @@ card_of_matrix (const struct plant *plant, struct result *result)
   }
   for (size_t f = 0; f < plant->fact_count; f++) {
     const struct plant_fact *about = &plant->fact[f];
+    if (plant->network.fact[f].absence) {
+      continue;
+    }
     card_add_row (result, card, about->line ? arena_format (result->arena, "line %zu", about->line)
                                             : "as defined")[0].text
       = fact_row (result->arena, plant, &plant->network.fact[f]);

@@ -16,16 +16,23 @@ wrong (struct reader_state *r, const struct node *node, const char *why, const c
   return fault_set_at (r->ev->fault, MESSAGE_KIND_WRONG, node->at, why, way_on);
 }
 
+/* What is told of a fact of the line that is read.  */
+static struct plant_fact
+about_line (const struct reader_state *r)
+{
+  const char *text = r->line ? r->line->source : "", *words = strchr (text, ' ');
+  return (struct plant_fact) { .line = r->number, .text = text, .per = 1, .unit = "",
+                               .words = words ? words + strspn (words, " ") : text,
+                               .stream = NO_STREAM };
+}
+
 static struct raw_fact *
 raw_add (struct reader_state *r, enum fact_kind kind)
 {
   r->raw = room_for_one (r->ev->arena, r->raw, r->raw_count, &r->raw_room, sizeof *r->raw);
   struct raw_fact *raw = &r->raw[r->raw_count++];
-  const char *text = r->line ? r->line->source : "", *words = strchr (text, ' ');
   *raw = (struct raw_fact) { .kind = kind, .u = UNSTATED, .stream = NO_STREAM, .of = NO_STREAM,
-                             .about = { .line = r->number, .text = text, .per = 1, .unit = "",
-                                        .words = words ? words + strspn (words, " ") : text,
-                                        .stream = NO_STREAM } };
+                             .about = about_line (r) };
   return raw;
 }
 
@@ -437,7 +444,7 @@ without_line (struct reader_state *r, const struct node *node)
       meet_species (r, set.at[i]);
       r->absent = room_for_one (r->ev->arena, r->absent, r->absent_count, &r->absent_room,
                                 sizeof *r->absent);
-      r->absent[r->absent_count++] = (struct absence) { stream, set.at[i] };
+      r->absent[r->absent_count++] = (struct absence) { stream, set.at[i], about_line (r) };
     }
   }
   r->has_gas = true;

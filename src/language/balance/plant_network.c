@@ -183,8 +183,7 @@ add_item_terms (struct reader_state *r, const struct item *item, const struct co
   for (size_t c = 0; c < plant->component_count; c++) {
     size_t column = plant_column (plant, item->stream, c);
     double k;
-    if ((item->species && item->species != plant->component[c])
-        || !plant->network.possible[column]) {
+    if (item->species && item->species != plant->component[c]) {
       continue;
     }
     if (!coefficient (r, count, c, &k)) {
@@ -264,10 +263,67 @@ mass_is_known (struct reader_state *r, const struct raw_fact *raw)
 
 /* A component said to be there where another line says that it cannot be.  */
 static bool
-says_impossible (const struct raw_fact *raw, const struct fact *fact)
+says_impossible (const struct plant *plant, const struct raw_fact *raw, const struct fact *fact)
 {
-  return raw->kind != FACT_COMPOSITION && raw->kind != FACT_SHARE && fact->left.count == 0
+  size_t flows = plant->stream_count * plant->network.components;
+  for (size_t i = 0; i < fact->left.count; i++) {
+    size_t column = fact->left.terms[i].column;
+    if (column >= flows || plant->network.possible[column]) {
+      return false;
+    }
+  }
+  return raw->kind != FACT_COMPOSITION && raw->kind != FACT_SHARE
          && raw->left.count > 0 && raw->left.at[0].species && fabs (raw->value) > 0;
+}
+
+/* What a line says cannot be in a stream is a fact too, that may be at fault in a clash.  */
+static void
+absences_of (struct reader_state *r, struct fact facts[])
+{
+  struct plant *plant = r->plant;
+  for (size_t i = 0; i < r->absent_count; i++) {
+    const struct absence *absence = &r->absent[i];
+    struct term *term = ARENA_NEW (r->ev->arena, struct term);
+    *term = (struct term) { plant_column (plant, absence->stream,
+                                          component_of (plant, absence->species)), 1 };
+    facts[r->raw_count + i] = (struct fact) { .kind = FACT_FORM, .left = { 1, term },
+                                              .u = UNSTATED, .weight = 1, .absence = true };
+    struct plant_fact *about = &plant->fact[r->raw_count + i];
+    *about = absence->about;
+    about->per = 3.6;
+    about->unit = "kmol/h";
+    about->stream = absence->stream;
+  }
+}
+
+/* By column: the fact that says a stream cannot hold it, so that it might without.  What is
+   measured is never without.                                                                    */
+static const size_t *
+denied_by (struct reader_state *r, const struct fact facts[])
+{
+  const struct plant *plant = r->plant;
+  size_t n = plant->network.components, flows = plant->stream_count * n;
+  size_t *denied = ARENA_ARRAY (r->ev->arena, flows + 1, size_t);
+  for (size_t j = 0; j < flows; j++) {
+    denied[j] = (size_t) -1;
+  }
+  for (size_t i = 0; i < r->raw_count; i++) {
+    const struct raw_fact *raw = &r->raw[i];
+    bool measured = facts[i].u > 0;
+    for (size_t c = 0; raw->gas && c < n; c++) {
+      measured = measured || facts[i].fractions_u[c] > 0;
+    }
+    for (size_t c = 0; raw->gas && !measured && c < n; c++) {
+      if (!(facts[i].fractions[c] > 0)) {
+        denied[plant_column (plant, raw->stream, c)] = i;
+      }
+    }
+  }
+  for (size_t i = 0; i < r->absent_count; i++) {
+    size_t column = facts[r->raw_count + i].left.terms[0].column;
+    denied[column] = denied[column] == (size_t) -1 ? r->raw_count + i : denied[column];
+  }
+  return denied;
 }
 
 static bool
@@ -276,12 +332,13 @@ facts_of (struct reader_state *r, const struct plant *base)
   struct plant *plant = r->plant;
   struct arena *arena = r->ev->arena;
   size_t columns = network_columns (&plant->network);
-  struct fact *facts = ARENA_ARRAY (arena, r->raw_count, struct fact);
+  size_t count = r->raw_count + r->absent_count;
+  struct fact *facts = ARENA_ARRAY (arena, count, struct fact);
   struct gathering_form work = { ARENA_ARRAY (arena, columns, double),
                                  ARENA_ARRAY (arena, columns, size_t),
                                  ARENA_ARRAY (arena, columns, bool), 0 };
-  plant->fact = ARENA_ARRAY (arena, r->raw_count, struct plant_fact);
-  base = base && base->fact_count == r->raw_count
+  plant->fact = ARENA_ARRAY (arena, count, struct plant_fact);
+  base = base && base->fact_count == count
          && base->network.components == plant->network.components ? base : NULL;
   for (size_t i = 0; i < r->raw_count; i++) {
     const struct raw_fact *raw = &r->raw[i];
@@ -299,7 +356,7 @@ facts_of (struct reader_state *r, const struct plant *base)
                || !form_of (r, &raw->right, &raw->count_right, &work, &fact->right)) {
       return false;
     }
-    if (says_impossible (raw, fact)) {
+    if (says_impossible (plant, raw, fact)) {
       fault_set_at (r->ev->fault, MESSAGE_KIND_WRONG, r->line->at,
                     arena_format (arena, "%s: the stream cannot hold it", raw->about.words),
                     "its composition, or an absent line, says so");
@@ -314,8 +371,10 @@ facts_of (struct reader_state *r, const struct plant *base)
                                                        .fact = { raw->about.text } });
     }
   }
+  absences_of (r, facts);
   plant->network.fact = facts;
-  plant->network.facts = plant->fact_count = r->raw_count;
+  plant->network.facts = plant->fact_count = count;
+  plant->network.denied = denied_by (r, facts);
   return true;
 }
 

@@ -55,8 +55,8 @@ struct raw_fact {
   struct plant_fact about;
 };
 
-/* What a stream cannot hold.  */
-struct absence { size_t stream; const struct species *species; };
+/* What a stream cannot hold, and the line that says so.  */
+struct absence { size_t stream; const struct species *species; struct plant_fact about; };
 
 /* A plant while it is read.  */
 struct reader_state {

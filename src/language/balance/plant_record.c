@@ -83,7 +83,8 @@ record_facts (struct session *session, const struct result *result, const struct
   for (size_t i = 0; i < plant->fact_count && i < plant->network.facts; i++) {
     const struct plant_fact *fact = &plant->fact[i];
     double figure = plant->network.fact[i].value * fact->per;
-    if (!isfinite (figure) || plant->network.fact[i].kind == FACT_COMPOSITION) {
+    if (!isfinite (figure) || plant->network.fact[i].kind == FACT_COMPOSITION
+        || plant->network.fact[i].absence) {
       continue;
     }
     kept_extend (session, result, &(struct step) {

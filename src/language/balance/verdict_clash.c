@@ -29,7 +29,7 @@ tell_gap (struct verdict_maker *m, const struct conflict *conflict)
     v->head = conflict->still < m->plant->stream_count
                 ? arena_format (m->arena, "these lines hold only if nothing flows in %s",
                                 m->plant->stream[conflict->still].name)
-                : "these facts of one place do not go together";
+                : "these lines do not go together";
     return;
   }
   v->gap_component = conflict->component < m->plant->component_count && !m->plant->whole
@@ -41,15 +41,23 @@ tell_gap (struct verdict_maker *m, const struct conflict *conflict)
                           figure_text (m->arena, v->gap), m->unit);
 }
 
+/* "CO2 ": the part of a composition, or what is said not to be there; else "".  */
+static const char *
+part_text (struct verdict_maker *m, const struct suspect *suspect)
+{
+  const struct fact *fact = &m->plant->network.fact[suspect->fact];
+  size_t c = fact->absence ? fact->left.terms[0].column % m->plant->network.components
+                           : suspect->component;
+  return fact->kind != FACT_COMPOSITION && !fact->absence
+           ? "" : arena_format (m->arena, "%s ", component_text (m->plant, c));
+}
+
 /* What the others leave a fact to say, where that is no one value.  */
 static const char *
 room_text (struct verdict_maker *m, const struct suspect *suspect)
 {
   const struct plant_fact *f = &m->plant->fact[suspect->fact];
-  const struct fact *fact = &m->plant->network.fact[suspect->fact];
-  const char *part = fact->kind != FACT_COMPOSITION ? ""
-                     : arena_format (m->arena, "%s ", component_text (m->plant,
-                                                                      suspect->component));
+  const char *part = part_text (m, suspect);
   if (isnan (suspect->least)) {
     return "the others leave it open";
   }
@@ -66,14 +74,12 @@ static const char *
 needed_text (struct verdict_maker *m, const struct suspect *suspect)
 {
   const struct plant_fact *f = &m->plant->fact[suspect->fact];
-  bool gas = m->plant->network.fact[suspect->fact].kind == FACT_COMPOSITION;
+  const char *part = part_text (m, suspect);
   if (isnan (suspect->needed)) {
     return suspect->plausible ? room_text (m, suspect) : "not at fault alone";
   }
   const char *value = fact_value_text (m, suspect->fact, suspect->needed);
-  if (gas) {
-    value = arena_format (m->arena, "%s %s", component_text (m->plant, suspect->component), value);
-  }
+  value = arena_format (m->arena, "%s%s", part, value);
   if (suspect->plausible) {
     return value;
   }
@@ -194,7 +200,12 @@ verdict_clash (struct verdict_maker *m)
     }
   }
   /* In the order of the lines.  */
-  for (size_t line = 0; line <= m->plant->fact[m->plant->fact_count - 1].line; line++)
+  size_t last = 0;
+  for (size_t i = 0; i < conflict->count; i++) {
+    const struct plant_fact *f = &m->plant->fact[conflict->suspects[i].fact];
+    last = f->line > last ? f->line : last;
+  }
+  for (size_t line = 0; line <= last; line++)
     for (size_t i = 0; i < conflict->count; i++)
       if (m->plant->fact[conflict->suspects[i].fact].line == line && !is_told (m, conflict, i)) {
         tell_line (m, conflict, i);
