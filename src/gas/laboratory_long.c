@@ -12,9 +12,9 @@
 
 /* Where things stand, or NOWHERE.  */
 struct long_table {
-  size_t sample, date, figures, spread, unit, basis;
+  size_t sample, apart, figures, spread, unit, basis;
   struct heading figure, uncertainty;
-  bool dated;                     /* the date tells apart what one sample's name does not */
+  bool parted;                    /* a date or a run tells apart what one sample's name does not */
 };
 
 /* What a row has: numbers of its sample and component.  */
@@ -142,8 +142,8 @@ take_column (struct long_reading *r, size_t column, size_t first, struct fault *
     t->sample = column;
     return true;
   }
-  if (h.kind == HEADING_DATE && t->date == NOWHERE) {
-    t->date = column;
+  if ((h.kind == HEADING_DATE || h.kind == HEADING_SAMPLE) && t->apart == NOWHERE) {
+    t->apart = column;
     return true;
   }
   if (h.kind == HEADING_SPREAD) {
@@ -171,8 +171,8 @@ find_columns (struct long_reading *r, size_t first, struct fault *fault)
     if (k != lab->names && !take_column (r, k, first, fault))
       return false;
   if (r->t.sample == NOWHERE) {
-    r->t.sample = r->t.date;
-    r->t.date = NOWHERE;
+    r->t.sample = r->t.apart;
+    r->t.apart = NOWHERE;
   }
   if (r->t.figures == NOWHERE)
     return complain_at (lab, lab->heading, lab->names, MESSAGE_LABORATORY_LAYOUT,
@@ -198,9 +198,9 @@ sample_of (struct long_reading *r, size_t row)
   if (name.n == 0)
     return NULL;
   const char *text = slice_text (r->arena, name);
-  if (r->t.dated)
+  if (r->t.parted)
     text = arena_format (r->arena, "%s, %s", text,
-                         slice_text (r->arena, cell_slice (lab, row, r->t.date)));
+                         slice_text (r->arena, cell_slice (lab, row, r->t.apart)));
   struct axis *s = axis_of (r->samples, text);
   if (s != NULL)
     return s;
@@ -365,7 +365,7 @@ figure_cell (struct long_reading *r, const struct long_row *at, struct fault *fa
   return with_unit (r->arena, cell, r->unit.unit != NULL ? r->unit.unit_text : "%");
 }
 
-/* A component that stands twice in one sample: with the date beside the name, perhaps not.  */
+/* A component that stands twice in one sample.  */
 static bool
 twice (const struct long_reading *r, const struct long_row *at, const struct csv_cell *before,
        struct fault *fault)
@@ -387,7 +387,7 @@ too_many (const struct laboratory *lab, struct fault *fault)
                       "part the file", fault);
 }
 
-/* FALSE with *AGAIN, and no fault: the date is to tell samples apart.  */
+/* FALSE with *AGAIN, and no fault: a date or a run is to tell samples apart.  */
 static bool
 make_rows (struct long_reading *r, bool *again, struct fault *fault)
 {
@@ -412,7 +412,7 @@ make_rows (struct long_reading *r, bool *again, struct fault *fault)
     const struct long_row *at = &r->rows[i];
     struct csv_cell *cell = &of[at->sample][2 * at->component];
     bool *full = &filled[at->sample * lab->component_count + at->component];
-    *again = *full && r->t.date != NOWHERE && !r->t.dated;
+    *again = *full && r->t.apart != NOWHERE && !r->t.parted;
     if (*full)
       return *again ? false : twice (r, at, cell, fault);
     *full = true;
@@ -468,22 +468,23 @@ layout_long (struct laboratory *lab, struct arena *arena, size_t first, struct f
 {
   struct long_reading r = {
     .lab = lab, .arena = arena, .unit_read = { "", 0 },
-    .t = { .sample = NOWHERE, .date = NOWHERE, .figures = NOWHERE, .spread = NOWHERE,
+    .t = { .sample = NOWHERE, .apart = NOWHERE, .figures = NOWHERE, .spread = NOWHERE,
            .unit = NOWHERE, .basis = NOWHERE }
   };
   bool again;
   if (!find_columns (&r, first, fault))
     return false;
+  const char *apart = slice_text (arena, cell_slice (lab, lab->heading, r.t.apart));
   r.rows = ARENA_ARRAY (arena, lab->row_count, struct long_row);
   bool done = read_all (&r, first, &again, fault);
   if (!done && again) {
-    r.t.dated = true;
+    r.t.parted = true;
     done = read_all (&r, first, &again, fault);
   }
   if (!done)
     return false;
-  if (r.t.date != NOWHERE && !r.t.dated)
-    pass_over (lab, arena, "the date");
+  if (r.t.apart != NOWHERE && !r.t.parted)
+    pass_over (lab, arena, arena_format (arena, "column '%s'", apart));
   settle_axes (&r);
   return true;
 }

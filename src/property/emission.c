@@ -56,7 +56,7 @@ fuel_find (struct property_tables *tables, const char *name, struct fuel *fuel,
   char plain[64];
   const struct figures *figures = property_tables_read (tables, PROPERTY_TABLE_FUELS, F_FACTORS,
                                                         columns, fault);
-  *fuel = (struct fuel) { NULL, { NAN, NAN, NAN }, "" };
+  *fuel = (struct fuel) { NULL, { (double) NAN, (double) NAN, (double) NAN }, "" };
   if (figures == NULL)
     return false;
   plain_name (name, plain, sizeof plain);
@@ -196,7 +196,7 @@ dilution_factor (const struct dilution *d, double *k, struct workings *workings,
                  struct fault *fault)
 {
   const double A = d->oxygen_in_air, most = A * (d->by == F_WET ? 1 - d->water_in_air : 1);
-  struct step step = { .value = NAN, .unit = "1" };
+  struct step step = { .value = (double) NAN, .unit = "1" };
   if (d->by == F_CARBON) {
     if (!(d->diluent > least_carbon_dioxide))
       return too_thin ("carbon dioxide", d->diluent, fault);

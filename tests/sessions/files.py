@@ -301,6 +301,8 @@ GOOD = [
     ("one sampling point on two days", "sample,date,component,mol%\nT1,02.11.,CH4,1\n"
      "T1,02.11.,CO2,99\nT1,03.11.,CH4,60.5\nT1,03.11.,CO2,38.25\nT1,03.11.,N2,1.2\n"
      "T1,03.11.,H2S,0.05\n", 'sample "T1, 03.11."'),
+    ("one sample, run twice", "sample,run,component,mol%\nT1,1,CH4,1\nT1,1,CO2,99\n"
+     "T1,2,CH4,60.5\nT1,2,CO2,38.25\nT1,2,N2,1.2\nT1,2,H2S,0.05\n", 'sample "T1, 2"'),
     ("of two columns of figures one is asked for", "sample,component,mass%,ppm\nB,CH4,1,2\n"
      "A,CH4,3,605000\nA,CO2,4,382500\nA,N2,5,12000\nA,H2S,6,500\n", 'sample "A" ppm'),
     ("nitrogen as the rest",

@@ -164,6 +164,9 @@ convert_ratio (struct conversion *c)
   if (c->unit->ratio == RATIO_ENERGY) {
     return convert_energy_ratio (c);
   }
+  if (unit_is_emission (c->unit)) {
+    return convert_mass_per_heat (c);
+  }
   if (c->unit->ratio == RATIO_NONE) {
     return conversion_mismatch (c, "a ratio of two flows has no such unit");
   }
@@ -182,7 +185,10 @@ static bool
 target_fits (struct conversion *c)
 {
   const struct value *v = c->value;
-  if (c->counted_as && v->kind != VALUE_PART && v->kind != VALUE_TRACE) {
+  bool part = v->kind == VALUE_PART || v->kind == VALUE_TRACE
+              || (v->kind == VALUE_RATIO && v->top && v->top->kind == VALUE_PART
+                  && unit_is_emission (c->unit));
+  if (c->counted_as && !part) {
     return fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->counted_as->at,
                          "only a component is counted as another", NULL);
   }

@@ -40,6 +40,12 @@ bool convert_f_factor (struct conversion *) MUST_CHECK;
 bool convert_limits (struct conversion *) MUST_CHECK;
 bool convert_energy (struct conversion *, const struct composition *, double moles) MUST_CHECK;
 bool convert_energy_ratio (struct conversion *) MUST_CHECK;
+/* Sets the fault that the target does not say gross or net; false: it does.  */
+bool neither_gross_nor_net (struct conversion *);
+/* The energy in a stream or in components of one, J or W.  */
+bool energy_of (struct conversion *, const struct value *, bool net, double *energy) MUST_CHECK;
+/* A ratio of two flows as mass over heat: CO of stack / fuel in mg/MJ net.  */
+bool convert_mass_per_heat (struct conversion *) MUST_CHECK;
 
 /* Is the unit a share or a concentration?  */
 bool unit_is_concentration (const struct unit *);

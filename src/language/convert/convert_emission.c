@@ -54,6 +54,60 @@ convert_f_factor (struct conversion *c)
   return conversion_add (c, F, &standing);
 }
 
+/* ---- A measured flow over a measured heat ---- */
+
+/* The mass of what is emitted, counted as the target says.  */
+static bool
+mass_of (struct conversion *c, const struct value *v, double *mass)
+{
+  struct conversion top = *c;
+  double per_mass, per_moles;
+  if (v->kind == VALUE_STREAM) {
+    *mass = v->stream.moles * v->stream.gas->molar_mass;
+    record_molar_mass (c->ev, v->stream.gas, NULL);
+    return true;
+  }
+  top.value = v;
+  count_sum (&top);
+  if (!counted_mass (&top, &per_mass, &per_moles)) {
+    return false;
+  }
+  *mass = v->moles * per_mass;
+  RECORD (c->ev, .name = "mass of", .of = v->part, .formula = "m = n_c M_c", .value = *mass,
+          .unit = mass_unit (v->flow), .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("n_c", v->moles, moles_unit (v->flow)),
+                        CONSTANT ("M_c", per_mass, "kg/mol", STEP_WEIGHTS)));
+  return true;
+}
+
+bool
+convert_mass_per_heat (struct conversion *c)
+{
+  const struct value *v = c->value;
+  const bool net = (c->words & WORD_NET) != 0;
+  struct standing standing = { c->what, NULL,
+                               net ? "mass over heat, net" : "mass over heat, gross" };
+  double mass, energy;
+  if (neither_gross_nor_net (c)) {
+    return false;
+  }
+  if (!v->top) {
+    return conversion_mismatch (c, "this ratio has no masses and energies");
+  }
+  if (!mass_of (c, v->top, &mass) || !energy_of (c, v->bottom, net, &energy)) {
+    fault_place (c->ev->fault, c->subject_at);
+    return false;
+  }
+  if (!(energy > 0)) {
+    return fault_set_at (c->ev->fault, MESSAGE_RANGE, c->subject_at,
+                         "nothing can be divided by what does not burn", NULL);
+  }
+  RECORD (c->ev, .name = "mass over heat", .formula = "E = m/P", .value = mass / energy,
+          .unit = "kg/J", .source = STEP_DEFINITION,
+          STEP_SYMBOLS (SYMBOL ("m", mass, "kg, or kg/s"), SYMBOL ("P", energy, "J, or W")));
+  return conversion_add (c, mass / energy, &standing);
+}
+
 /* ---- Emissions per heat ---- */
 
 /* Of what is emitted: its share, the mass counted for a mole of it, and the gas it is in; DILUENT

@@ -120,7 +120,7 @@ convert_limits (struct conversion *c)
 
 /* ---- Energy ---- */
 
-static bool
+bool
 neither_gross_nor_net (struct conversion *c)
 {
   if (c->words & (WORD_GROSS | WORD_NET)) {
@@ -164,8 +164,7 @@ record_energy (struct evaluation *ev, double n, double H, double energy)
           STEP_SYMBOLS (SYMBOL ("n", n, "mol, or mol/s"), SYMBOL ("H", H, "J/mol")));
 }
 
-/* The energy in a stream or in components of one.  */
-static bool
+bool
 energy_of (struct conversion *c, const struct value *v, bool net, double *energy)
 {
   double H;

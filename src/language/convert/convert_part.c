@@ -354,8 +354,7 @@ partial_flow (struct conversion *c, enum flow_basis basis)
   return conversion_add (c, part_volume, &standing);
 }
 
-/* NOx by mass is NO and NO2 as NO2, unless the target counts it as something else.  */
-static void
+void
 count_sum (struct conversion *c)
 {
   const char *as = c->value->species.counted_as;

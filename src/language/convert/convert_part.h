@@ -11,6 +11,8 @@ struct host {
   struct stream state;                     /* T, p, Z of its own */
 };
 bool host_of (struct conversion *, struct host *) MUST_CHECK;
+/* NOx by mass is NO and NO2 as NO2, unless the target counts it as something else.  */
+void count_sum (struct conversion *);
 /* Oxygen of a gas, dry.  */
 double dry_oxygen (struct conversion *, const struct composition *gas);
 /* Mass per mole of what the component is counted as, all species of a peak together, and moles of
