@@ -177,6 +177,18 @@ holds_so_far (struct session *session, struct fault *fault)
   return done;
 }
 
+/* What fails of a line is in that line, be it that the gas it is of has no such thing.  */
+static void
+place_in_line (const struct statement *s, struct fault *fault)
+{
+  const struct place line = s->claim ? s->claim->at : s->at;
+  const bool before = fault->at.line < line.line
+                      || (fault->at.line == line.line && fault->at.first < s->at.first);
+  if (before) {
+    fault->at = line;
+  }
+}
+
 bool
 block_add (struct session *session, const struct statement *s, struct fault *fault)
 {
@@ -188,6 +200,7 @@ block_add (struct session *session, const struct statement *s, struct fault *fau
   if (b->kind == BLOCK_SHEET && !holds_so_far (session, fault)) {
     block_place (session, fault);
     fault_quote (fault, NULL);
+    place_in_line (s, fault);
     b->count--;
     return false;
   }
