@@ -131,6 +131,12 @@ nobody_leans (const struct session *s, const char *name)
   return only && is_own (only, name_find (s, name, strlen (name)));
 }
 
+bool
+name_is_shared (const struct session *s, const char *name)
+{
+  return map_find (s->mentioned, name, strlen (name)) == SEVERAL (s);
+}
+
 size_t
 names_leaning (struct session *s, struct arena *arena, const char *name,
                struct definition ***leaning)

@@ -10,6 +10,8 @@ struct arena; struct definition; struct node; struct session; struct statement;
 
 /* Does D lean on NAME, directly or through others?  */
 bool definition_leans (struct session *, struct definition *, const char *name);
+/* Did more than one definition ever mention NAME?  */
+bool name_is_shared (const struct session *, const char *name);
 /* All that lean on NAME, in the order of the session, into an array in ARENA; how many.  */
 size_t names_leaning (struct session *, struct arena *, const char *name,
                       struct definition ***leaning);

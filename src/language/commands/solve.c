@@ -53,6 +53,23 @@ is_new_gas (const struct plant *plant, size_t s)
                                  || plant->boundary[from].line->kind == STATEMENT_REACT);
 }
 
+/* A balance that has the stream NAME too and on which the balance PLANT leans: were NAME made of
+   PLANT, each would lean on the other.  Null: there is none.                                    */
+static const struct definition *
+in_a_circle (struct session *session, struct arena *arena, const struct plant *plant,
+             const char *name)
+{
+  struct definition *balance = name_find (session, plant->name, strlen (plant->name)), **leaning;
+  const size_t n = balance && name_is_shared (session, name)
+                     ? names_leaning (session, arena, name, &leaning) : 0;
+  for (size_t i = 0; i < n; i++)
+    if (leaning[i] != balance && leaning[i]->kind == NAME_BALANCE
+        && definition_leans (session, balance, leaning[i]->name)) {
+      return leaning[i];
+    }
+  return NULL;
+}
+
 /* The stream as a definition of its own, unless it is one already; taken away if it is no longer
    fixed and nobody leans on it.                                                                 */
 static void
@@ -72,7 +89,13 @@ make_stream (struct session *session, struct evaluation *ev, const struct plant 
   if (fixed && value.kind == VALUE_STREAM && is_new_gas (plant, s)) {
     caution_gas (session, ev->result, value.stream.gas, name);
   }
-  if (fixed && !before) {
+  const struct definition *other = fixed && !before
+                                     ? in_a_circle (session, ev->arena, plant, name) : NULL;
+  if (other) {
+    struct remark *remark = result_remark (ev->result, MESSAGE_NOTE_STREAM_CIRCLE, name,
+                                           plant->name);
+    remark->fact[2] = other->name;
+  } else if (fixed && !before) {
     struct definition *d = definition_made (name, plant->name,
                                             plant->whole ? NAME_QUANTITY : NAME_STREAM);
     size_t place = name_place (session, d->name, d, session->count);
