@@ -108,6 +108,31 @@ limiting (const struct dictionary *d, size_t k)
   return found;
 }
 
+/* The same, but of the rows that limit it within SLACK the one with the largest pivot: small ones
+   spoil the table (Harris, Mathematical Programming 5 (1973) 1).  It may run round in circles.  */
+static size_t
+limiting_well (const struct dictionary *d, size_t k)
+{
+  static const double slack = 1e-10;
+  size_t found = NOWHERE;
+  double bound = (double) INFINITY;
+  for (size_t i = 0; i < d->rows; i++) {
+    const double *row = row_at (d, i);
+    if (d->bounded[d->basic[i]] && row[1 + k] < -nearly_zero) {
+      bound = fmin (bound, (fmax (row[0], 0) + slack) / -row[1 + k]);
+    }
+  }
+  for (size_t i = 0; i < d->rows; i++) {
+    const double *row = row_at (d, i);
+    if (d->bounded[d->basic[i]] && row[1 + k] < -nearly_zero
+        && fmax (row[0], 0) / -row[1 + k] <= bound
+        && (found == NOWHERE || row[1 + k] < row_at (d, found)[1 + k])) {
+      found = i;
+    }
+  }
+  return found;
+}
+
 /* Makes the last row as great as it can be; infinite: returns false and leaves the ray.  The
    largest gain enters, after some steps the lowest variable, so that it ends.                   */
 static bool
@@ -127,7 +152,7 @@ climb (struct dictionary *d)
     if (enters == NOWHERE || steps > 50 * patience || is_stopped (d)) {
       return true;
     }
-    leaves = limiting (d, enters);
+    leaves = steps < patience ? limiting_well (d, enters) : limiting (d, enters);
     if (leaves == NOWHERE) {
       d->ray = enters;
       return false;
