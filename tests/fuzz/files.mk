@@ -14,6 +14,7 @@ check_PROGRAMS += %D%/mutate_cells
 %C%_mutate_cells_LDADD = $(upto_gas) $(GSL_LIBS)
 
 EXTRA_DIST += \
+  %D%/blocks.gw \
   %D%/by_component.csv \
   %D%/fuzz.sh \
   %D%/fuzz_cells.sh \

@@ -8,6 +8,6 @@ int LLVMFuzzerTestOneInput (const uint8_t *bytes, size_t n);
 int
 LLVMFuzzerTestOneInput (const uint8_t *bytes, size_t n)
 {
-  fuzz_lines ((const char *) bytes, n);
+  fuzz_lines ((const char *) bytes, n, false);
   return 0;
 }

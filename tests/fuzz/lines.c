@@ -6,7 +6,11 @@
 #include <string.h>
 #include "language/session.h"
 #include "language/tree.h"
+#include "report/chart.h"
+#include "report/note.h"
 #include "report/report.h"
+#include "result/chart.h"
+#include "result/note.h"
 #include "result/result.h"
 #include "support/arena.h"
 #include "support/fault.h"
@@ -60,11 +64,35 @@ look_at_output (const struct run *run, const struct text *out)
       broken (run, never[i]);
 }
 
+/* Notes and pictures, as the shell would have them written.  */
+static void
+look_at_files (const struct run *run, const struct result *result)
+{
+  const struct note_about about = { "2026-12-01", "gaswright" };
+  struct text out;
+  text_init (&out);
+  for (const struct note *note = result->note; note; note = note->next) {
+    for (int form = NOTE_MARKDOWN; form <= NOTE_HTML; form++) {
+      text_empty (&out);
+      note_write (&out, (enum note_form) form, note, &about);
+      look_at_output (run, &out);
+    }
+  }
+  for (const struct picture *picture = result->picture; picture; picture = picture->next) {
+    text_empty (&out);
+    chart_write (&out, picture->chart);
+    look_at_output (run, &out);
+  }
+  text_clear (&out);
+}
+
+/* The width of the page follows from the text, so that every width comes up.  */
 static void
 look_at_result (const struct run *run, const struct result *result)
 {
-  const struct report_style style = { .digits = 6 };
+  const struct report_style style = { .digits = 6, .width = run->n % 128 };
   struct text out;
+  look_at_files (run, result);
   text_init (&out);
   for (int form = 0; form < REPORT_FORMATS; form++) {
     text_empty (&out);
@@ -148,12 +176,17 @@ look_at_names (const struct run *run)
   arena_destroy (arena);
 }
 
+/* Would it write a file, or read another one than those of the demo?  */
 static bool
 uses_files (const struct statement *statement)
 {
   switch ((int) statement->kind) {
-  case STATEMENT_SAVE: case STATEMENT_OPEN: case STATEMENT_NOTE: return true;
-  default: return statement->kind == STATEMENT_GAS && statement->text != NULL;
+  case STATEMENT_SAVE: case STATEMENT_OPEN: return true;
+  case STATEMENT_NOTE: return false;         /* the shell writes it */
+  default:
+    return statement->text != NULL && !statement->picture
+           && strcmp (statement->text, "digester.csv") != 0
+           && strcmp (statement->text, "cleaned.csv") != 0;
   }
 }
 
@@ -211,8 +244,61 @@ run_lines (struct run *run, const char *text, size_t n)
   text_clear (&line);
 }
 
+/* Runs STATEMENT, which must go well.  */
+static void
+must_run (const struct run *run, struct session *session, const char *statement)
+{
+  struct arena *arena = arena_create ();
+  struct parser *parser = parser_create (arena, session_vocabulary (session), statement,
+                                         strlen (statement), 1, BLOCK_NONE);
+  struct statement *parsed;
+  struct result result;
+  struct fault fault;
+  fault_init (&fault, arena);
+  if (!parser_next (parser, &parsed, &fault) || !parsed)
+    broken (run, "save and open are not read");
+  result_init (&result, arena, statement);
+  if (!session_run (session, parsed, &result, &fault))
+    broken (run, "what was saved cannot be opened");
+  arena_destroy (arena);
+}
+
+static char *
+file_text (const char *name)
+{
+  struct text text;
+  FILE *file = fopen (name, "r");
+  text_init (&text);
+  for (int c; file && (c = getc (file)) != EOF;)
+    text_add_char (&text, (char) c);
+  if (file)
+    fclose (file);
+  return text.bytes;
+}
+
+/* Saved, opened and saved again a session gives the same bytes.  */
+static void
+look_at_saved (const struct run *run)
+{
+  const struct session_options options = { 0 };
+  struct arena *arena = arena_create ();
+  struct fault fault;
+  fault_init (&fault, arena);
+  struct session *again = session_create (&options, &fault);
+  must_run (run, run->session, "save \"first.gw\"");
+  must_run (run, again, "open \"first.gw\"");
+  must_run (run, again, "save \"second.gw\"");
+  char *first = file_text ("first.gw"), *second = file_text ("second.gw");
+  if (!first || !second || strcmp (first, second) != 0)
+    broken (run, "what was saved, opened and saved is another session");
+  free (first);
+  free (second);
+  session_destroy (again);
+  arena_destroy (arena);
+}
+
 void
-fuzz_lines (const char *text, size_t n)
+fuzz_lines (const char *text, size_t n, bool saved)
 {
   const struct session_options options = { 0 };
   struct fault fault;
@@ -224,6 +310,8 @@ fuzz_lines (const char *text, size_t n)
   keep_names (&run);
   run_lines (&run, defined, sizeof defined - 1);
   run_lines (&run, text, n);
+  if (saved && session_block (run.session) == BLOCK_NONE)
+    look_at_saved (&run);
   session_destroy (run.session);
   arena_destroy (run.arena);
   arena_destroy (run.kept);
