@@ -28,11 +28,14 @@
 
 enum { STATUS_GOOD, STATUS_FAILED, STATUS_WRONG_USE };
 
+/* WITH: the output that is open; or null.  */
 static void
-end_without_memory (void)
+end_without_memory (void *with)
 {
   static const char sentence[] = "gaswright: there is not enough memory\n";
 
+  if (with != NULL)
+    output_give_up (with);
   if (!descriptor_write (STDERR_FILENO, sentence, sizeof sentence - 1))
     _exit (STATUS_FAILED);
   _exit (STATUS_FAILED);
@@ -158,7 +161,9 @@ run (const struct options *options)
     complain_about_file (options->output, "cannot be written", descriptor_reason (errno));
     return STATUS_FAILED;
   }
+  arena_on_exhaustion (end_without_memory, &output);
   good = run_session (options, &output, at_prompt);
+  arena_on_exhaustion (end_without_memory, NULL);
   good = output_finish (&output, !interrupt_pending ()) && good;
   interrupt_pass_on ();
   return good ? STATUS_GOOD : STATUS_FAILED;
@@ -186,7 +191,7 @@ main (int argc, char *argv[])
 
   setlocale (LC_CTYPE, "");
   gsl_set_error_handler_off ();
-  arena_on_exhaustion (end_without_memory);
+  arena_on_exhaustion (end_without_memory, NULL);
   descriptor_fill_standard ();
   text_init (&complaint);
   if (!options_read (&options, argc, argv, &complaint)) {

@@ -66,7 +66,18 @@ output_flush (struct output *output)
       && errno != EINTR)
     output->error = errno;
   text_empty (&output->pending);
+  output->whole = 0;
   return output->error == 0;
+}
+
+void
+output_give_up (struct output *output)
+{
+  if (output->to_file && output->file.beside != NULL)
+    (void) unlink (output->file.beside);
+  else if (output->whole > 0
+           && !descriptor_write (output->fd, output->pending.bytes, output->whole))
+    output->error = errno;
 }
 
 /* Shows what is pending by the pager if it is longer than the screen.  False if it was not.  */
@@ -82,6 +93,7 @@ show_paged (struct output *output)
   if (lines < rows || !pager_show (shown->bytes, shown->length))
     return false;
   text_empty (&output->pending);
+  output->whole = 0;
   return true;
 }
 
@@ -109,6 +121,7 @@ output_result (struct output *output, const struct result *result, bool paged)
     if (paged && show_paged (output))
       return;
   }
+  output->whole = output->pending.length;
   if (output->pending.length >= ENOUGH)
     output_flush (output);
 }
@@ -130,6 +143,7 @@ output_fault (struct output *output, const struct fault *fault,
 
   if (output->format == REPORT_JSON) {
     report_fault (&output->pending, REPORT_JSON, &output->style, fault, origin);
+    output->whole = output->pending.length;
     return;
   }
   output_flush (output);

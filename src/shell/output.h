@@ -20,6 +20,7 @@ struct output {
   struct report_style fault_style;      /* of what goes to standard error */
   bool prompt;                          /* answers appear under what is typed */
   struct text pending;
+  size_t whole;                         /* bytes of it that are whole answers */
   int fd;
   const char *name;                     /* for complaints */
   bool to_file;
@@ -45,6 +46,10 @@ void output_file_fault (struct output *, const char *name, const char *why);
 
 /* Plain text for the user, on standard error: "gaswright: SENTENCE".  */
 void output_complain (const char *sentence);
+
+/* Where the run cannot go on, for want of memory: writes the answers that are whole, or takes away
+   the output file, whose old one stays.  Needs no memory.                                       */
+void output_give_up (struct output *);
 
 /* Flushes, puts an output file in its place (or, without KEEP, away) and gives everything back.
    False, having said so, if something could not be written.                                     */

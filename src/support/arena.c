@@ -245,7 +245,7 @@ arena_used (const struct arena *arena)
 }
 
 void
-arena_on_exhaustion (void (*handler) (void))
+arena_on_exhaustion (void (*handler) (void *), void *with)
 {
-  memory_on_exhaustion (handler);
+  memory_on_exhaustion (handler, with);
 }

@@ -32,8 +32,8 @@ char *arena_format (struct arena *, const char *format, ...) PRINTF_LIKE (2, 3) 
 /* Bytes handed out since the last reset.  */
 size_t arena_used (const struct arena *);
 
-/* Called once, by the shell: what to do when memory runs out (print, exit).  */
-void arena_on_exhaustion (void (*handler) (void));
+/* Called by the shell: what to do, WITH what, when memory runs out (print, exit).  */
+void arena_on_exhaustion (void (*handler) (void *), void *with);
 
 #define ARENA_NEW(arena, type) ((type *) arena_alloc ((arena), 1, sizeof (type)))
 #define ARENA_ARRAY(arena, count, type) ((type *) arena_alloc ((arena), (count), sizeof (type)))

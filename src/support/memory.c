@@ -4,20 +4,21 @@
 #include <stdint.h>
 #include <stdlib.h>
 
-/* The one variable of this layer that changes: set once, by the shell, before anything else.  */
-static void (*exhausted) (void);
+/* What changes in this layer: set by the shell, before anything else.  */
+static struct { void (*handler) (void *); void *with; } exhaustion;
 
 void
-memory_on_exhaustion (void (*handler) (void))
+memory_on_exhaustion (void (*handler) (void *), void *with)
 {
-  exhausted = handler;
+  exhaustion.handler = handler;
+  exhaustion.with = with;
 }
 
 static _Noreturn void
 give_up (void)
 {
-  if (exhausted != NULL)
-    exhausted ();
+  if (exhaustion.handler != NULL)
+    exhaustion.handler (exhaustion.with);
   abort ();
 }
 

@@ -21,7 +21,7 @@ void memory_release (void *memory);
 size_t memory_sum (size_t a, size_t b) MUST_CHECK;
 size_t memory_product (size_t a, size_t b) MUST_CHECK;
 
-/* What to do when memory runs out; null: only abort.  */
-void memory_on_exhaustion (void (*handler) (void));
+/* What to do, WITH what, when memory runs out; null: only abort.  */
+void memory_on_exhaustion (void (*handler) (void *), void *with);
 
 #endif

@@ -150,23 +150,23 @@ formats_of_any_length (void)
 }
 
 static void
-leave (void)
+leave (void *with)
 {
-  _exit (7);
+  _exit (*(const int *) with);
 }
 
 /* How a process ends that asks for COUNT objects of SIZE bytes after a handler was set, or not.  */
 static int
 status_of_asking (size_t count, size_t size, bool with_handler)
 {
-  int status = 0;
+  int status = 7;
   pid_t child = fork ();
 
   if (child == 0) {
     struct arena *arena = arena_create ();
 
     if (with_handler)
-      arena_on_exhaustion (leave);
+      arena_on_exhaustion (leave, &status);
     else
       close (STDERR_FILENO);
     _exit (arena_alloc (arena, count, size) != NULL ? 0 : 1);
