@@ -314,6 +314,9 @@ convert_emission (struct conversion *c)
   if (factor == F_WET && !(composition_fraction (host.gas, c->ev->session->water) > 0)) {
     return wet_form_of_dry (c);
   }
+  if (c->ev->result) {
+    note_none_stated (c);
+  }
   e.moisture = c->ev->describe ? moisture_word (c->ev, host.gas) : NULL;
   return emission (c, factor, &e);
 }

@@ -173,8 +173,7 @@ real_volume_share (struct conversion *c, const struct host *host, double *phi,
   return true;
 }
 
-/* Nobody said that the component is there, nor that it is not, as `<5 ppm` does.  */
-static void
+void
 note_none_stated (struct conversion *c)
 {
   const struct value *v = c->value;

@@ -19,6 +19,9 @@ double dry_oxygen (struct conversion *, const struct composition *gas);
    that.                                                                                         */
 bool counted_mass (struct conversion *, double *mass_per_mole, double *moles_per_mole) MUST_CHECK;
 
+/* A note if nobody said that the component is there, nor that it is not, as `<5 ppm` does.  */
+void note_none_stated (struct conversion *);
+
 /* The basis with the oxygen a figure counts at: that of the target, else that of a trace as it was
    stated.                                                                                       */
 const char *conversion_oxygen (struct conversion *, const char *basis);
