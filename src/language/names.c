@@ -270,17 +270,17 @@ shift_place (struct session *s, struct fault *fault, const struct statement *fro
   fault->at.line += from->at.line - 1;
 }
 
-static void
-note_hidden (struct session *s, const struct statement *from, struct result *result)
+void
+name_note_hidden (struct session *s, const char *name, struct result *result)
 {
   const struct species *species;
   const char *candidates;
-  size_t n = strlen (from->name);
-  if (air_is_name (from->name, n)) {
+  size_t n = strlen (name);
+  if (air_is_name (name, n)) {
     result_remark (result, MESSAGE_NOTE_HIDES_AIR, NULL, NULL);
-  } else if (species_find (s->vocabulary.species, from->name, n, &species, &candidates)
+  } else if (species_find (s->vocabulary.species, name, n, &species, &candidates)
              == SPECIES_SYNONYM) {
-    result_remark (result, MESSAGE_NOTE_HIDES, from->name, species->key);
+    result_remark (result, MESSAGE_NOTE_HIDES, name, species->key);
   }
 }
 
@@ -307,7 +307,7 @@ name_define (struct session *s, const struct statement *from, const char *source
     undo_note (s, d->name, before, d, place, NULL);
     definition_release (before);          /* the session's hold; the log has its own */
     if (!before) {
-      note_hidden (s, from, result);
+      name_note_hidden (s, from->name, result);
     }
   } else {
     name_place (s, d->name, before, place);

@@ -169,6 +169,8 @@ struct remark *file_remarks (struct arena *, const char *path, const struct labo
 /* ---- Names (names.c) ---- */
 
 struct definition *name_find (const struct session *, const char *name, size_t length);
+/* Notes that NAME, which was just defined, hides air or a component.  */
+void name_note_hidden (struct session *, const char *name, struct result *);
 /* Defines a name by SOURCE (a whole statement): refuses what depends on itself or leaves another
    without sense, keeps it and makes it undoable.  FROM is the statement as typed, for places.   */
 bool name_define (struct session *, const struct statement *from, const char *source,

@@ -50,6 +50,11 @@ FORMS = [
     ("an energy flow", block("mix unit: a + b = c", "known a = 1 MW gross of CH4",
                              "known b = 2 MW gross of CH4", "known composition of c = CH4"),
      "c in MW gross", 3, 1e-9),
+    # Of 20.9477 % of oxygen (U.S. Standard Atmosphere 1976, its parts adding up to 1).
+    ("a stream that is called air", block("mix unit: fuel + air = c", "known fuel = 3 kmol/h of CH4",
+                                          "known composition of air = air",
+                                          "known O2 of c = 19 mol%"),
+     "air in kmol/h", 3 * 0.19 / (0.209477 - 0.19), 1e-4),
     ("a split by a ratio", block("split tee: feed = a + b", "known feed = 100 kmol/h of digester",
                                  "known a / b = 3"), "CO2 of b in kmol/h", 10, 1e-9),
     ("parts of the flow of one component",

@@ -475,7 +475,9 @@ plant_read_known (struct reader_state *r, const struct statement *line)
   if (!line->claim) {
     return without_line (r, line->value);
   }
-  if (!plant_reading (r, line->value, &left) || !plant_reading (r, line->claim, &right)) {
+  if (!plant_reading (r, line->value, &left)
+      || !(left.kind == READING_COMPOSITION ? plant_gas_reading (r, line->claim, &right)
+           : plant_reading (r, line->claim, &right))) {
     return false;
   }
   if (left.kind == READING_FIGURE || left.kind == READING_GAS) {

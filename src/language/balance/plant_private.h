@@ -88,6 +88,8 @@ void plant_sort_streams (struct arena *, struct plant *);
 
 /* plant_reading.c  */
 bool plant_reading (struct reader_state *, const struct node *, struct reading *) MUST_CHECK;
+/* What a composition is said to be: a gas, even where a stream has its name.  */
+bool plant_gas_reading (struct reader_state *, const struct node *, struct reading *) MUST_CHECK;
 /* No such stream in the balance, with the nearest name offered.  */
 bool plant_stream_unknown (struct reader_state *, const struct node *name);
 

@@ -6,6 +6,7 @@
 
 #include <math.h>
 #include <string.h>
+#include "gas/air.h"
 #include "gas/composition.h"
 #include "gas/species.h"
 #include "language/session_private.h"
@@ -396,8 +397,10 @@ of_reading (struct reader_state *r, const struct node *node, struct reading *out
     return false;
   }
   if (number.kind != READING_FIGURE || !is_share (&number.figure)) {
+    bool gas = b->kind == NODE_NAME && air_is_name (b->text, strlen (b->text));
     return wrong (r, a, "what stands before 'of' is a share here: 5 % of tail",
-                  "a flow alone: known feed = 850 Nm3/h");
+                  gas ? "known air = 850 Nm3/h, and: known composition of air = air"
+                  : "a flow alone: known feed = 850 Nm3/h");
   }
   if (number.figure.measure.ratio == RATIO_NONE) {
     return fault_set_at (r->ev->fault, MESSAGE_UNIT_EXPECTED, a->at,
@@ -465,4 +468,16 @@ plant_reading (struct reader_state *r, const struct node *node, struct reading *
     return wrong (r, node, "this cannot be said of a stream that is not known yet",
                   "a known is a flow, a share, a ratio, a recovery or a composition");
   }
+}
+
+bool
+plant_gas_reading (struct reader_state *r, const struct node *node, struct reading *out)
+{
+  if (node->kind != NODE_NAME || plant_find (r->plant, node->text) == NO_STREAM
+      || !air_is_name (node->text, strlen (node->text))) {
+    return plant_reading (r, node, out);
+  }
+  *out = (struct reading) { .kind = READING_GAS, .node = node, .list = node };
+  out->gas = gas_of_composition (r->ev, r->ev->session->air, node->text);
+  return out->gas != NULL;
 }

@@ -101,6 +101,7 @@ make_stream (struct session *session, struct evaluation *ev, const struct plant 
     size_t place = name_place (session, d->name, d, session->count);
     names_remember_mentions (session, d);
     undo_note (session, d->name, NULL, d, place, NULL);
+    name_note_hidden (session, name, ev->result);
   } else if (!fixed && before && !is_leant_on (session, ev->arena, name)) {
     size_t place = name_place (session, name, NULL, 0);
     undo_note (session, before->name, before, NULL, place, NULL);
