@@ -4,8 +4,8 @@
 static const char BOUNDARY[] = "mix NAME: what goes in = what comes out";
 static const char KNOWN[] = "known WHAT = FIGURE";
 static const char REACTION[] = "react NAME: ... = ... with CH4 + 2 O2 = CO2 + 2 H2O";
-static const char OPENERS[] = "inside a balance a line opens with mix, separate, split, components,"
-                              " known or end";
+static const char OPENERS[] = "inside a balance a line opens with mix, separate, split, react,"
+                              " components, known, absent, per, around or end";
 static const char CLAIM[] = "a stated figure is a number with its unit";
 
 struct node *
@@ -30,13 +30,13 @@ parse_claim (struct parser *p, bool unitless)
   return state != NULL ? node_link (p, NODE_AT, claim, state) : NULL;
 }
 
-/* NAME { "+" NAME }  */
+/* NAME { "+" NAME }, names that a stream may have  */
 static struct node *
-parse_flows (struct parser *p)
+parse_flows (struct parser *p, const char *form)
 {
-  struct node *first = parse_name (p, BOUNDARY), *last = first;
+  struct node *first = parse_free_name (p, form), *last = first;
   while (last != NULL && accept (p, TOKEN_PLUS)) {
-    last->next = parse_name (p, BOUNDARY);
+    last->next = parse_free_name (p, form);
     last = last->next;
   }
   return last != NULL ? first : NULL;
@@ -86,26 +86,38 @@ parse_reactions (struct parser *p, struct statement *statement)
   return expect_end (p, REACTION);
 }
 
+/* Is an arrow at hand, as others write a balance?  */
+static bool
+at_arrow (const struct parser *p)
+{
+  const char *text = p->scan.text + p->token.start;
+  const size_t n = p->token.end - p->token.start;
+  return p->token.kind == TOKEN_BAD
+         && (n == 2 ? memcmp (text, "->", 2) == 0 : n == 3 && memcmp (text, "\u2192", 3) == 0);
+}
+
 static bool
 parse_boundary (struct parser *p, struct statement *statement)
 {
+  const char *form = statement->kind == STATEMENT_REACT ? REACTION : BOUNDARY;
   /* NAME ":" NAME { "+" NAME } "=" NAME { "+" NAME } [ "with" reaction { "," reaction } ]  */
-  if (!parse_new_name (p, BOUNDARY, &statement->name, &statement->name_at))
+  if (!parse_new_name (p, form, &statement->name, &statement->name_at))
     return false;
   if (!accept (p, TOKEN_COLON))
-    return fail_unexpected (p, BOUNDARY);
-  if ((statement->inlets = parse_flows (p)) == NULL)
+    return fail_unexpected (p, form);
+  if ((statement->inlets = parse_flows (p, form)) == NULL)
     return false;
   const char *other_side = "move it to the other side of '='";
   if (!accept (p, TOKEN_EQUALS))
-    return fail_unexpected (p, p->token.kind == TOKEN_MINUS ? other_side : BOUNDARY);
-  if ((statement->outlets = parse_flows (p)) == NULL)
+    return at_arrow (p) ? fail (p, MESSAGE_WORD_UNEXPECTED, p->token.at, "->", form)
+           : fail_unexpected (p, p->token.kind == TOKEN_MINUS ? other_side : form);
+  if ((statement->outlets = parse_flows (p, form)) == NULL)
     return false;
   if (statement->kind == STATEMENT_REACT && at_end (p))
-    return fail (p, MESSAGE_BLOCK_LINE, p->first.at, "react", OPENERS);
+    return fail (p, MESSAGE_BLOCK_LINE, p->first.at, "react", REACTION);
   if (statement->kind == STATEMENT_REACT && accept_word (p, "with"))
     return parse_reactions (p, statement);
-  return expect_end (p, p->token.kind == TOKEN_MINUS ? other_side : BOUNDARY);
+  return expect_end (p, p->token.kind == TOKEN_MINUS ? other_side : form);
 }
 
 /* "conversion" "of" NAME "in" NAME  */

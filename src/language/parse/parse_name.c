@@ -3,6 +3,8 @@
 
 #include "gas/species.h"
 
+static const char OF_COMPONENT[] = "is a component; its formula keeps its meaning";
+
 struct node *
 node_new (struct parser *p, enum node_kind kind, struct place from)
 {
@@ -198,6 +200,20 @@ is_key (const struct parser *p, const char *text)
             == SPECIES_KEY;
 }
 
+struct node *
+parse_free_name (struct parser *p, const char *way_on)
+{
+  const struct token t = p->token;
+  struct node *name = NULL;
+  if (t.kind == TOKEN_WORD && word_is_reserved (p->scan.text + t.start, t.end - t.start))
+    fail (p, MESSAGE_NAME_RESERVED, t.at, token_text (p, &t), "is a word of the language");
+  else if ((name = parse_name (p, way_on)) != NULL && is_key (p, name->text)) {
+    fail (p, MESSAGE_NAME_RESERVED, name->at, name->text, OF_COMPONENT);
+    return NULL;
+  }
+  return name;
+}
+
 bool
 parse_new_name (struct parser *p, const char *form, const char **name, struct place *at)
 {
@@ -217,8 +233,7 @@ parse_new_name (struct parser *p, const char *form, const char **name, struct pl
   const char *given = t.kind == TOKEN_TEXT ? arena_copy (p->arena, text + 1, t.end - t.start - 2)
                       : plain_text (p, text, t.end - t.start, t.twins);
   if (is_key (p, given))
-    return fail (p, MESSAGE_NAME_RESERVED, t.at, given,
-                 "is a component; its formula keeps its meaning");
+    return fail (p, MESSAGE_NAME_RESERVED, t.at, given, OF_COMPONENT);
   *name = given;
   *at = t.at;
   token_take (p);

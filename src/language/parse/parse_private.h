@@ -145,6 +145,8 @@ struct node *node_link (struct parser *, enum node_kind, struct node *a, struct 
 bool at_name (const struct parser *);
 /* NAME, where one is referred to.  */
 struct node *parse_name (struct parser *, const char *way_on);
+/* The same, and neither a word of the language nor the key of a component.  */
+struct node *parse_free_name (struct parser *, const char *way_on);
 /* The name of a fuel, of several words too: natural gas is natural-gas.  */
 struct node *parse_fuel (struct parser *, const char *way_on);
 /* How many words of it stand here; 0 or 1: no name of several.  */
