@@ -234,6 +234,24 @@ def cautions(tap):
              else objects[0]["cautions"] or ["no caution"], "a balance warns of what it mixes")
 
 
+def what_streams_hold(tap):
+    """Shares of one component are 100 % or a clash, unless something says what else there is:
+    where shares are all there is, a verdict that they do not agree says what it took."""
+    lines = ("separate unit: feed = a + b", "known feed = 9 kmol/h", "known CH4 of feed = 60.0 mol%",
+             "known CH4 of a = 90.0 mol%", "known CH4 of b = 10.0 mol%")
+    said = [session.run(block(*more, *lines, *end), "text")[1] for more, end in (
+        ((), ()), (("components CH4, CO2",), ()), ((), ("known composition of b = digester",)),
+        ((), ("known CH4 of feed = 61.0 ± 0.1 mol%",)),
+        (("components CH4, CO2",), ("known CH4 of feed = 61.0 ± 0.1 mol%",
+                                    "known CH4 of feed = 60.5 ± 0.1 mol%")))]
+    holds = "streams can hold       CH4 and nothing else"
+    tap.tell([one for one, want in zip(said, (True, False, False, True, False))
+              if (holds in one) != want], "a clash of shares says what streams were taken to hold")
+    tap.tell([one for one in ("CH4 of feed (line 7)", "CH4 of feed (line 8)")
+              if one not in said[-1]],
+             "two analyses of one stream are told apart by their lines")
+
+
 def nothing_there(tap):
     """A line that says nothing is there takes its unknowns away: without it they would be open, so
     the others do not imply it, and nothing is to spare."""
@@ -343,6 +361,7 @@ def long_lists(tap):
 def main():
     tap = session.Tap()
     forms(tap)
+    what_streams_hold(tap)
     nothing_there(tap)
     live(tap)
     digits(tap)

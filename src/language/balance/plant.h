@@ -49,6 +49,7 @@ struct plant {
   const char *name;
   size_t component_count, stream_count, boundary_count, fact_count;
   const struct species **component;        /* none in a balance of whole flows */
+  bool components_told;                    /* by a line; else those that the lines speak of */
   struct plant_stream *stream;
   struct map *stream_by_name, *boundary_by_name;         /* to index + 1; only while it is read */
   const size_t *streams_sorted;            /* by name, once it is read */

@@ -33,6 +33,7 @@ components_hold (struct reader_state *r, size_t told)
   struct plant *plant = r->plant;
   plant->component = r->species;
   plant->component_count = r->species_count;
+  plant->components_told = r->species_told;
   if (r->species_told && r->species_count > told) {
     return fault_set_at (r->ev->fault, MESSAGE_KIND_WRONG, r->line->at,
                          arena_format (r->ev->arena, "%s is not among the components of the "

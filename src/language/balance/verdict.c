@@ -282,6 +282,40 @@ close_balance (struct verdict_maker *m)
   }
 }
 
+enum { COMPONENTS_MOST = 4 };       /* with more of them none was forgotten */
+
+static bool
+has_whole_gas (const struct plant *plant)
+{
+  for (size_t i = 0; i < plant->fact_count; i++)
+    if (plant->network.fact[i].kind == FACT_COMPOSITION) {
+      return true;
+    }
+  return false;
+}
+
+/* What streams can hold, where that was taken from shares alone and the lines do not agree: an
+   analysis of which the rest was not typed looks like a mistake in it.                          */
+static void
+tell_components (struct verdict_maker *m)
+{
+  const struct plant *plant = m->plant;
+  const bool agree = m->solution->status != BALANCE_CONTRADICTORY
+                     && (m->solution->status != BALANCE_RECONCILED || m->verdict->passed);
+  if (plant->whole || plant->components_told || agree
+      || plant->component_count > COMPONENTS_MOST || has_whole_gas (plant)) {
+    return;
+  }
+  struct text_list keys = { .at = NULL };
+  for (size_t c = 0; c < plant->component_count; c++) {
+    text_list_add (m->arena, &keys, plant->component[c]->key);
+  }
+  const char *all = verdict_joined (m, "components", &keys);
+  verdict_fact (m, "streams can hold",
+                arena_format (m->arena, "%s and nothing else, as no line speaks of more; a line "
+                              "'components %s, ...' says what else there is", all, all));
+}
+
 const struct balance_verdict *
 plant_verdict (struct evaluation *ev, const struct plant *plant, const struct target *targets)
 {
@@ -314,6 +348,7 @@ plant_verdict (struct evaluation *ev, const struct plant *plant, const struct ta
     }
     verdict_loose (&m);
   }
+  tell_components (&m);
   redundant_facts (&m);
   close_balance (&m);
   negative_flows (&m);

@@ -8,6 +8,33 @@
 #include "result/result.h"
 #include "support/arena.h"
 
+/* Up to the blanks before its '='; 0: there is none.  */
+static size_t
+left_length (const struct plant_fact *f)
+{
+  const char *equals = strchr (f->words, '=');
+  size_t n = f->line > 0 && equals ? (size_t) (equals - f->words) : 0;
+  while (n > 0 && f->words[n - 1] == ' ') {
+    n--;
+  }
+  return n;
+}
+
+/* Is something else stated of the same, as by two analyses of one stream?  */
+static bool
+stands_twice (const struct verdict_maker *m, const struct plant_fact *f)
+{
+  const size_t n = left_length (f);
+  for (size_t i = 0; i < m->solution->adjustment_count; i++) {
+    const struct plant_fact *other = &m->plant->fact[m->solution->adjustments[i].fact];
+    if (other->stream == f->stream && other->line != f->line && left_length (other) == n
+        && strncmp (other->words, f->words, n) == 0) {
+      return true;
+    }
+  }
+  return false;
+}
+
 /* What a figure is called: its stream, or the component of it.  */
 static const char *
 figure_name (const struct verdict_maker *m, const struct adjustment *a)
@@ -19,13 +46,11 @@ figure_name (const struct verdict_maker *m, const struct adjustment *a)
     return arena_format (m->arena, "%s of %s", component_text (plant, a->component),
                          plant->stream[f->stream].name);
   }
-  const char *equals = strchr (f->words, '=');
-  if (f->line > 0 && equals) {
-    size_t n = (size_t) (equals - f->words);
-    while (n > 0 && f->words[n - 1] == ' ') {
-      n--;
-    }
-    return arena_copy (m->arena, f->words, n);
+  const size_t n = left_length (f);
+  if (n > 0) {
+    return stands_twice (m, f) ? arena_format (m->arena, "%.*s (line %zu)", (int) n, f->words,
+                                               f->line)
+           : arena_copy (m->arena, f->words, n);
   }
   return f->stream != NO_STREAM ? plant->stream[f->stream].name : f->words;
 }
