@@ -30,6 +30,8 @@ refuses '# remark\nname\tvalue\tsource\na\t1\tx\nb\tx\n' \
 refuses 'name\tsource\nb\tx\na\tx\n' "tables/try.tsv:3: 'a' stands behind 'b'"
 refuses 'name\tsource\n10\tx\n9\tx\n8\tx\n' "tables/try.tsv:4: '8' stands behind '9'"
 refuses 'name\tsource\na\tx\na\tx\n' "tables/try.tsv:3: a second row for 'a'"
+refuses '# order: as written\nname\tsource\nb\tx\na\tx\nb\tx\n' \
+  "tables/try.tsv:5: a second row for 'b'"
 refuses 'name\tsource\n\tx\n' 'tables/try.tsv:2: no key in the first column'
 refuses 'name\tvalue\na\t1\n' "tables/try.tsv:1: the last column is not 'source'"
 refuses 'name\tsource\r\na\tx\r\n' 'tables/try.tsv:1: the line ends in a carriage return'

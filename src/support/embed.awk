@@ -2,8 +2,8 @@
 # so that the cells are strings as they stand; and the list of all tables.
 #
 # Refuses a row with a wrong number of columns, a row without a source, and a row out of order:
-# rows are sorted by the bytes of their first column, each key once, unless a remark says
-# "# order: as written" or "# several rows a key".  Run with LC_ALL=C, or the order is another one.
+# rows are sorted by the bytes of their first column unless a remark says "# order: as written", and
+# each key stands once unless one says "# several rows a key".  Run with LC_ALL=C, or the order is another one.
 
 function finish_table() {
   if (name == "")
@@ -62,10 +62,11 @@ NF != columns { complain(NF " columns where there are " columns) }
 $1 == "" { complain("no key in the first column") }
 $NF ~ /^[ ]*$/ { complain("no source") }
 !as_written && ($1 "") < (last "") { complain("'" $1 "' stands behind '" last "'") }
-!as_written && !several && ($1 "") == (last "") { complain("a second row for '" $1 "'") }
+!several && (name SUBSEP $1) in seen { complain("a second row for '" $1 "'") }
 
 {
   last = $1
+  seen[name SUBSEP $1] = 1
   print "  " quoted($0) ","
 }
 
