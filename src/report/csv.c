@@ -12,6 +12,11 @@
      whose `label` is "line" and whose `basis` is the text;
    - a check: the computed figure is a row like any; behind it one for each reading that fits, is
      ruled out, or would have to be true instead: `label` says which, `basis` what it is;
+   - a balance: `what` is its name; a row "verdict" with the phrase as `value` and the one thing to
+     know as `basis`, one "count", one for each further sentence, all with the text as `basis`; of
+     a clash a row for each line, `label` "line 3", `value` the line, `basis` what it would have to
+     be; of what was reconciled "stated" and "moved to" for each figure, `what` its line.  Behind
+     them its card;
    - a trend: a row a sample, `label` its name; behind them mean, standard deviation, median;
    - workings: a row a step; `what` is the step, `label` its formula, `basis` the source; a row for
      each term of a formula that has a figure for each, `what` "STEP, TERM";
@@ -23,6 +28,7 @@
 #include <math.h>
 #include <string.h>
 
+#include "result/balance_verdict.h"
 #include "result/check_verdict.h"
 #include "report/formula.h"
 #include "result/result.h"
@@ -239,6 +245,57 @@ check_add (struct frame *frame, const struct check_verdict *v)
 }
 
 static void
+figure_add (struct frame *frame, const char *what, const char *label, double value,
+            const char *unit, double uncertainty)
+{
+  row_open (frame, what, label);
+  next_number (frame->out, value);
+  next_field (frame->out, unit);
+  next_number (frame->out, uncertainty);
+  text_add (frame->out, ",,");
+  row_close (frame);
+}
+
+static void
+adjustments_add (struct frame *frame, const struct balance_verdict *v)
+{
+  for (size_t i = 0; i < v->adjustment_count; i++) {
+    const struct verdict_adjustment *a = &v->adjustments[i];
+    struct text what;
+    text_init (&what);
+    text_add (&what, a->statement);
+    if (a->component != NULL)
+      text_add_format (&what, ": %s", a->component);
+    figure_add (frame, what.bytes, "stated", a->stated, a->unit, (double) NAN);
+    figure_add (frame, what.bytes, "moved to", a->reconciled, a->unit, a->uncertainty);
+    text_clear (&what);
+  }
+}
+
+static void
+balance_add (struct frame *frame, const struct balance_verdict *v)
+{
+  const char *label = "";
+  words_add (frame, v->name, "verdict", v->phrase, v->head);
+  words_add (frame, v->name, "count", NULL, v->counts);
+  for (const struct verdict_row *r = v->clash ? v->rows : NULL; r != NULL; r = r->next) {
+    struct text line;
+    text_init (&line);
+    if (r->number > 0)
+      text_add_format (&line, "line %zu", r->number);
+    else
+      text_add (&line, "defined before");
+    words_add (frame, v->name, line.bytes, r->cell[0], r->cell[1]);
+    text_clear (&line);
+  }
+  adjustments_add (frame, v);
+  for (const struct verdict_row *f = v->facts; f != NULL; f = f->next) {
+    label = f->cell[0] != NULL && *f->cell[0] != '\0' ? f->cell[0] : label;
+    words_add (frame, v->name, label, NULL, f->cell[1]);
+  }
+}
+
+static void
 number_add (struct frame *frame, const struct trend *trend, const char *label, double value)
 {
   const struct answer a = { .what = trend->what, .label = label, .value = value,
@@ -308,6 +365,8 @@ rows_add (struct frame *frame, const struct result *result)
 {
   for (const struct answer *a = result->answers; a != NULL; a = a->next)
     answer_add (frame, a);
+  if (result->balance != NULL)
+    balance_add (frame, result->balance);
   for (const struct card *c = result->cards; c != NULL; c = c->next) {
     for (const struct card_row *r = c->rows; r != NULL; r = r->next)
       card_row_add (frame, c, r);
@@ -322,8 +381,9 @@ rows_add (struct frame *frame, const struct result *result)
     help_page_add (frame, result->help);
   if (result->workings != NULL)
     steps_add (frame, result->workings);
-  if (result->answers == NULL && result->cards == NULL && result->help == NULL
-      && result->trend == NULL && result->workings == NULL && result->check == NULL)
+  if (result->answers == NULL && result->cards == NULL && result->balance == NULL
+      && result->help == NULL && result->trend == NULL && result->workings == NULL
+      && result->check == NULL)
     words_add (frame, NULL, NULL, NULL, NULL);
 }
 

@@ -1,5 +1,6 @@
 """Every form a fact of a balance can take, against plain arithmetic; and what becomes of a balance
 when something it leans on changes, when it is taken back, kept and opened again."""
+import csv
 import math
 import os
 import re
@@ -252,6 +253,27 @@ def what_streams_hold(tap):
              "two analyses of one stream are told apart by their lines")
 
 
+def tables(tap):
+    """As CSV a verdict is there, whatever it is: 9 - 5 - 3 is 1, by hand."""
+    meters = ("split tee: a = b + c", "known a = 9.00 kmol/h", "known b = 5.00 kmol/h")
+    found = {}
+    for name, more in (("clash", ("known c = 3.00 kmol/h",)), ("moved", ("known c = 3.9 ± 0.3 kmol/h",)),
+                       ("complete", ())):
+        out = session.run(block(*meters, *more), "csv")[1]
+        found[name] = list(csv.DictReader(out.splitlines(keepends=True), strict=True))
+    out = session.run(block(*meters[:2]), "csv")[1]
+    found["short"] = list(csv.DictReader(out.splitlines(keepends=True), strict=True))
+    said = {name: [row["value"] for row in rows if row["label"] == "verdict"]
+            for name, rows in found.items()}
+    want = {"clash": ["CLASH"], "moved": ["RECONCILED"], "complete": ["COMPLETE"],
+            "short": ["SHORT BY 1"]}
+    tap.tell([] if said == want else [repr(said)], "a verdict as CSV")
+    needed = {row["value"]: row["basis"] for row in found["clash"] if row["label"][:5] == "line "}
+    tap.tell([] if needed == {"known a = 9.00 kmol/h": "8 kmol/h", "known b = 5.00 kmol/h":
+                              "6 kmol/h", "known c = 3.00 kmol/h": "4 kmol/h"}
+             else [repr(needed)], "the lines of a clash as CSV")
+
+
 def nothing_there(tap):
     """A line that says nothing is there takes its unknowns away: without it they would be open, so
     the others do not imply it, and nothing is to spare."""
@@ -362,6 +384,7 @@ def main():
     tap = session.Tap()
     forms(tap)
     what_streams_hold(tap)
+    tables(tap)
     nothing_there(tap)
     live(tap)
     digits(tap)
