@@ -41,20 +41,34 @@ before_closing (double x, double moved)
   return moved < 1 ? (moved - x) / (1 - moved) : 0;
 }
 
+/* The part that moved most.  Of two that moved as far, as both of two parts do, it is the one that
+   rose with its figure.                                                                         */
+static size_t
+part_moved_most (const struct raw_fact *up, const struct raw_fact *down)
+{
+  size_t most = 0;
+  double by = 0;
+  for (size_t i = 0; i < up->gas->count; i++) {
+    double dx = up->gas->fraction[i] - down->gas->fraction[i];
+    if (fabs (dx) > fabs (by) * (1 + 1e-9) || (dx > 0 && dx > fabs (by) * (1 - 1e-9))) {
+      most = i;
+      by = dx;
+    }
+  }
+  return most;
+}
+
 /* Of a part that moved alone before the list was closed again, what it itself moved by.  Any other
    way of moving counts as it is.                                                                */
 static void
 add_parts (struct raw_fact *raw, const struct raw_fact *up, const struct raw_fact *down)
 {
-  size_t n = raw->gas->count, most = 0;
+  size_t n = raw->gas->count;
   if (!up->gas || !down->gas || up->gas->count != n || down->gas->count != n) {
     return;
   }
   bool alone = true;
-  for (size_t i = 0; i < n; i++) {
-    double dx = fabs (up->gas->fraction[i] - down->gas->fraction[i]);
-    most = dx > fabs (up->gas->fraction[most] - down->gas->fraction[most]) ? i : most;
-  }
+  size_t most = part_moved_most (up, down);
   double d = 0.5 * (up->gas->fraction[most] - down->gas->fraction[most]);
   double left = 1 - raw->gas->fraction[most];
   for (size_t i = 0; i < n; i++) {
