@@ -190,6 +190,7 @@ choose_values (struct work *work)
     }
   } else {
     program_point (work->program, work->value);
+    system_correct (work->core->system, work->core->v, work->value);
   }
 }
 

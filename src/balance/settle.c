@@ -24,6 +24,7 @@ settled (struct arena *arena, const struct network *network, const struct fact *
   size_t components = network->components;
   double whole = 1, part = form_value (&fact->left, v);
   double *x = ARENA_ARRAY (arena, components, double);
+  double *rounding = ARENA_ARRAY (arena, components, double);
   if (fact->kind == FACT_RATIO) {
     whole = form_value (&fact->right, v);
   } else if (fact->kind != FACT_FORM) {
@@ -41,8 +42,10 @@ settled (struct arena *arena, const struct network *network, const struct fact *
     out.rounding = fabs (out.value) * after_moving;
     for (size_t c = 0; c < components && fact->kind == FACT_COMPOSITION; c++) {
       x[c] = fmax (v[fact->stream * components + c] / whole, 0);
+      rounding[c] = x[c] * after_moving;
     }
     out.fractions = fact->kind == FACT_COMPOSITION ? x : fact->fractions;
+    out.fractions_rounding = fact->kind == FACT_COMPOSITION ? rounding : NULL;
   }
   return out;
 }
