@@ -10,8 +10,10 @@
 
 /* How closely the sum of squares is minimised while flows to hold are still looked for.  */
 static const double ROUGHLY = 1e-2;
+/* In usual flows: what flows less inside may well be held.  */
+static const double NEXT_TO_NOTHING = 1e-6, LITTLE = 1e-4;
 /* Rounds of holding flows at zero and letting them go again.  */
-enum { ROUNDS = 50 };
+enum { ROUNDS = 50, OFTEN = 2 };
 /* What a stream that is let go starts with, in usual flows.  */
 static const double AFRESH = 1e-2;
 
@@ -21,7 +23,9 @@ struct bounded {
   const struct solve_options *options;
   struct fit *fit;
   const double *from;            /* where the next search starts; null at first */
+  const double *inside;          /* where no flow was below zero, or null */
   bool *released;                /* by stream: it was let go as a whole, which happens once */
+  int *let_go;                   /* by column: how often */
 };
 
 double
@@ -34,6 +38,25 @@ fit_largest (const struct measured *measured, const struct fit *fit)
   return most;
 }
 
+/* Was column J, or with it a whole stream, next to nothing where the search was inside of what is
+   above zero?  Nothing is known of that where it was not.  */
+static bool
+was_nothing (const struct bounded *a, size_t first, size_t count)
+{
+  double flow = 0;
+  for (size_t j = first; a->inside && j < first + count; j++) {
+    flow += a->inside[j];
+  }
+  return flow < NEXT_TO_NOTHING * a->measured->flow;
+}
+
+/* The same of what is held only together with another.  */
+static bool
+was_little (const struct bounded *a, size_t j)
+{
+  return !a->inside || a->inside[j] < LITTLE * a->measured->flow;
+}
+
 /* A stream whose total is below zero is held as a whole: its fractions say nothing then.  */
 static void
 hold_streams (struct bounded *a, const bool open[], double least)
@@ -41,8 +64,29 @@ hold_streams (struct bounded *a, const bool open[], double least)
   struct measured *measured = a->measured;
   size_t parts = measured->network->components;
   for (size_t j = 0; j < measured->network->streams * parts; j++) {
-    bool below = system_total (measured->system, a->fit->v, j / parts) < least;
+    size_t first = j - j % parts;
+    bool below = system_total (measured->system, a->fit->v, j / parts) < least
+                 && was_nothing (a, first, parts);
     measured->held[j] = measured->held[j] || (below && !open[j]);
+  }
+}
+
+/* One of two flows with a measured ratio is not held without the other, where both are below zero:
+   their ratio may be as measured.  */
+static void
+hold_ratios (struct bounded *a, double least)
+{
+  struct measured *measured = a->measured;
+  for (size_t i = 0; i < measured->figures; i++) {
+    const struct figure *figure = &measured->figure[i];
+    if (figure->left.count == 1 && figure->right.count == 1) {
+      size_t left = figure->left.terms[0].column, right = figure->right.terms[0].column;
+      bool both = a->fit->v[left] < least && a->fit->v[right] < least
+                  && was_little (a, left) && was_little (a, right);
+      if (both && (measured->held[left] || measured->held[right])) {
+        measured->held[left] = measured->held[right] = true;
+      }
+    }
   }
 }
 
@@ -57,7 +101,31 @@ hold_blocked (struct bounded *a)
   return true;
 }
 
-/* Holds at zero what came out below; was there any?  A flow that is open is left alone.  */
+/* The flow that comes to zero first on the way from inside to below zero; inside is there then.  */
+static size_t
+first_below (struct bounded *a, const bool open[], double least)
+{
+  size_t flows = a->measured->network->streams * a->measured->network->components, best = NOWHERE;
+  double share = HUGE_VAL;
+  for (size_t j = 0; j < flows; j++) {
+    double own = a->inside ? a->inside[j] : 0, then = a->fit->v[j];
+    if (then < least && !open[j] && !a->measured->held[j] && own / (own - then) < share) {
+      share = own / (own - then);
+      best = j;
+    }
+  }
+  if (best != NOWHERE && a->inside) {
+    double *there = ARENA_ARRAY (a->arena, a->measured->places, double);
+    for (size_t i = 0; i < a->measured->places; i++) {
+      there[i] = a->inside[i] + share * (a->fit->v[i] - a->inside[i]);
+    }
+    a->inside = there;
+  }
+  return best;
+}
+
+/* Holds at zero what came out below; was there any?  A flow that is open is left alone.  What has
+   flowed inside waits for what has not.  */
 static bool
 hold_negative (struct bounded *a)
 {
@@ -67,13 +135,23 @@ hold_negative (struct bounded *a)
   const struct measured *measured = a->measured;
   size_t flows = measured->network->streams * measured->network->components;
   double least = -BOUNDED_BELOW * fit_largest (measured, a->fit);
-  bool *open = fit_open (a->scratch, measured, a->fit), any = false;
+  bool *open = fit_open (a->scratch, measured, a->fit), any = false, any_below = false;
   for (size_t j = 0; j < flows; j++) {
-    if (a->fit->v[j] < least && !open[j] && !measured->held[j]) {
+    any_below = any_below || (a->fit->v[j] < least && !open[j] && !measured->held[j]);
+  }
+  for (size_t j = 0; j < flows; j++) {
+    bool below = a->inside ? any_below : a->fit->v[j] < least;
+    if (below && !open[j] && !measured->held[j] && measured->unknown[j] != NOWHERE
+        && was_nothing (a, j, 1)) {
       a->measured->held[j] = any = true;
     }
   }
+  size_t first = any ? NOWHERE : first_below (a, open, least);
+  if (first != NOWHERE) {
+    a->measured->held[first] = any = true;
+  }
   if (any) {
+    hold_ratios (a, least);
     hold_streams (a, open, least);
   }
   arena_reset (a->scratch);
@@ -167,6 +245,18 @@ release_stream (struct bounded *a, size_t stream, size_t row)
   return true;
 }
 
+/* A little of the flow is there at once, as something may be divided by it.  */
+static void
+release_flow (struct bounded *a, size_t j)
+{
+  double *from = ARENA_ARRAY (a->arena, a->measured->places, double);
+  memcpy (from, a->fit->v, a->measured->places * sizeof *from);
+  from[j] = NEXT_TO_NOTHING * a->measured->flow;
+  a->from = from;
+  a->measured->held[j] = false;
+  a->let_go[j]++;
+}
+
 /* Lets go the first held flow that wants to rise, or stream.  */
 static bool
 release (struct bounded *a)
@@ -179,8 +269,10 @@ release (struct bounded *a)
       if (held_parts (measured, j / parts) < 2) {
         double *c = ARENA_ARRAY (a->scratch, a->fit->tangent.equations.exact.count + 1, double);
         c[row] = 1;
-        go = wants_up (a, c);
-        a->measured->held[j] = !go;
+        go = a->let_go[j] < OFTEN && wants_up (a, c);
+        if (go) {
+          release_flow (a, j);
+        }
       } else if (j / parts != last) {
         last = j / parts;
         go = release_stream (a, last, row);
@@ -215,8 +307,13 @@ search (struct bounded *a, struct fault *fault)
     if (!is_going (a)) {
       return true;
     }
-    if (!hold_negative (a) && !release (a)) {
-      if (a->fit->move < MINIMISE_CLOSE) {
+    a->inside = a->fit->inside ? a->fit->inside : a->inside;
+    bool hold = hold_negative (a);
+    if (hold && a->inside) {
+      a->from = a->inside;
+    }
+    if (!hold && !release (a)) {
+      if (!(close > MINIMISE_CLOSE)) {
         return true;
       }
       close = MINIMISE_CLOSE;
@@ -227,11 +324,13 @@ search (struct bounded *a, struct fault *fault)
 
 bool
 minimise_bounded (struct arena *arena, struct measured *measured,
-                  const struct solve_options *options, struct fit *fit, struct fault *fault)
+                  const struct solve_options *options, const double from[], struct fit *fit,
+                  struct fault *fault)
 {
   struct bounded a = { .arena = arena, .scratch = arena_create (), .measured = measured,
-                       .options = options, .fit = fit };
+                       .options = options, .fit = fit, .from = from };
   a.released = ARENA_ARRAY (arena, measured->network->streams + 1, bool);
+  a.let_go = ARENA_ARRAY (arena, measured->system->columns, int);
   bool done = search (&a, fault);
   arena_destroy (a.scratch);
   return done;

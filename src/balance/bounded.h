@@ -19,8 +19,9 @@ struct arena; struct fault; struct solve_options;
 /* The largest component flow of a fit.  */
 double fit_largest (const struct measured *, const struct fit *);
 
-/* What is held is in `measured->held`.  Faults: interrupted, not-converged.  */
+/* What is held is in `measured->held`, also at first.  FROM: where to start, or null.  Faults:
+   interrupted, not-converged.  */
 bool minimise_bounded (struct arena *, struct measured *, const struct solve_options *,
-                       struct fit *, struct fault *) MUST_CHECK;
+                       const double from[], struct fit *, struct fault *) MUST_CHECK;
 
 #endif

@@ -17,6 +17,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/conflict.h \
   %D%/core.c \
   %D%/core.h \
+  %D%/descent.c \
+  %D%/descent.h \
   %D%/dictionary.c \
   %D%/dictionary.h \
   %D%/digits.c \

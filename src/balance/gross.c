@@ -15,6 +15,7 @@
 #include <string.h>
 #include <gsl/gsl_cdf.h>
 #include "balance/solution.h"
+#include "balance/uncertainty.h"
 #include "support/arena.h"
 #include "support/fault.h"
 
@@ -75,7 +76,7 @@ adjust (const struct gross *g, const struct figure *figure, double h, struct adj
 {
   double rest = 1 - h;
   a->moved_to = figure_value (figure, g->fit->v);
-  a->moved_to_u = figure->u * sqrt (h);
+  a->moved_to_u = figure->u * sqrt (h);        /* or more, see below */
   a->class = rest > REDUNDANT ? FIGURE_REDUNDANT : FIGURE_NEEDED;
   if (rest > REDUNDANT) {
     a->z = fabs (a->stated - a->moved_to) / (figure->u * sqrt (rest));
@@ -178,6 +179,21 @@ tie_equals (struct gross *g, struct adjustment at[])
   arena_destroy (work);
 }
 
+/* What flows are held at zero makes figures no better than they are without.  */
+static void
+loosen (struct gross *g, struct adjustment at[])
+{
+  const struct factor *loose = fit_loose_factor (g->scratch, g->measured, g->fit);
+  if (loose) {
+    double *h = ARENA_ARRAY (g->scratch, g->fit->rows + 1, double);
+    factor_leverages (loose, g->scratch, h);
+    for (size_t row = 0; row < g->fit->rows; row++) {
+      size_t i = g->fit->tangent.figure[row];
+      at[i].moved_to_u = fmax (at[i].moved_to_u, at[i].stated_u * sqrt (h[row]));
+    }
+  }
+}
+
 /* One for each figure, in their order.  *CRITICAL: for the redundant ones.  */
 static struct adjustment *
 adjust_all (struct gross *g, double *critical)
@@ -194,6 +210,7 @@ adjust_all (struct gross *g, double *critical)
     adjust (g, &g->measured->figure[i], h[row], &at[i]);
     tested += at[i].class == FIGURE_REDUNDANT;
   }
+  loosen (g, at);
   arena_reset (g->scratch);
   double each = pow (g->options->confidence, 1 / (double) (tested > 0 ? tested : 1));
   *critical = gsl_cdf_ugaussian_Qinv ((1 - each) / 2);

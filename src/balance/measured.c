@@ -38,6 +38,9 @@ of_digits (double rounding)
 
 /* ---- Figures ---- */
 
+/* What is better than this, relative, is not told from what is exact.  */
+static const double EXACT = 1e-9;
+
 struct making {
   struct arena *arena;
   const struct network *network;
@@ -61,6 +64,7 @@ stream_total (struct making *m, size_t stream)
 static void
 add_figure (struct making *m, struct figure figure)
 {
+  figure.u = fmax (figure.u, EXACT * fabs (figure.y));
   figure.closed_y = figure.y;
   m->figure[m->figures++] = figure;
 }
@@ -268,7 +272,7 @@ order_unknowns (struct arena *arena, struct measured *measured)
   for (size_t i = 0; i < measured->places; i++) {
     v[i] = measured->unknown[i] != NOWHERE ? 1 : 0;
   }
-  struct tangent t = tangent_make (work, measured, v, false);
+  struct tangent t = tangent_make (work, measured, v, (struct easing) { .loose = 0 });
   const struct sparse *C = &t.equations.exact, *G = &t.equations.measured;
   struct sets sets[] = { { C->count, C->start, C->column }, { G->count, G->start, G->column } };
   measured->order = column_order (arena, measured->unknowns, 2, sets);

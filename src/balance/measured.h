@@ -69,16 +69,23 @@ double *gradient_make (struct arena *, const struct measured *) MUST_CHECK;
 struct tangent {
   struct linearised equations;
   double *c, *e;                 /* by exact row; by measured row: (y - g) / u */
+  double *noise;                 /* by measured row: what of e is rounding */
   double *size;                  /* of each exact row: its largest scaled coefficient, of a bend a
                                     usual flow */
   double *terms;                 /* of each exact row: the sum of its terms without their signs */
   size_t bends, held;            /* where in the exact rows these begin */
-  const size_t *figure;          /* by measured row */
+  size_t figures;                /* measured rows that are figures */
+  const size_t *figure;          /* by such a row */
 };
-/* START: without bends and closures, ratios as rows left - y right with right taken as at least
-   MEASURED_LEAST usual flows, and a weak row for each unknown that it stays where it is.  */
+/* What makes the way to a solution easier.  LOOSE above zero, for the start of a search: all is
+   linear then.  Closures stay as they are, ratios are rows left - y right with right taken as at
+   least MEASURED_LEAST usual flows, outlets of bent splits are measured, to LOOSE of their flow,
+   to have the composition that the inlet has now, and a weak row for each unknown says that it
+   stays where it is.  DAMPING above zero: rows behind the figures say so of each unknown, weighted
+   by DAMPING over what it is now; of each flow, that it rises by LIFT / DAMPING of itself.      */
 #define MEASURED_LEAST 1e-3
+struct easing { double loose, damping, lift; };
 struct tangent tangent_make (struct arena *, const struct measured *, const double v[],
-                             bool start) MUST_CHECK;
+                             struct easing) MUST_CHECK;
 
 #endif

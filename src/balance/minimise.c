@@ -3,125 +3,31 @@
 
 #include <math.h>
 #include <string.h>
+#include "balance/descent.h"
 #include "balance/solution.h"
 #include "support/arena.h"
 #include "support/fault.h"
 
-/* Enough for slow linear convergence (a large residual of a bent figure); most need 2 to 6.  */
-enum { STEPS = 200, HALVINGS = 40 };
-
-/* In the end exact rows are met to MET of their terms.  A move as little as NOISE may be rounding,
-   if steps no longer shrink.  */
-static const double MET = 1e-12, NOISE = 1e-6;
-/* In usual flows: a stream below that which would cross zero stops the search; one below the second
-   does when it has shortened PATIENCE steps in a row.  */
-static const double BLOCKED = 1e-4, SLOWLY = 1e-2;
-enum { PATIENCE = 15 };
-/* Of the merit itself.  */
-static const double ROUNDING = 1e-12;
+/* Enough for slow linear convergence (a large residual of a bent figure); most need 2 to 6.  The
+   first way is given up sooner.  */
+enum { STEPS = 200, FIRST_STEPS = 40 };
+/* A move as little as this may be rounding, if steps no longer shrink.  */
+static const double NOISE = 1e-6;
 /* Rows that miss by more than this share of their terms contradict each other.  */
 static const double AGREED = 1e-9;
-/* How far a step may take a total or a closure towards zero; Armijo's share.  */
-static const double NEAREST = 0.9, DESCENT = 1e-4;
-/* In usual flows: a flow that is next to nothing at the start.  */
-static const double NOTHING = 1e-6;
-enum { PASSES = 2 };
-
-struct search {
-  struct arena *arena;           /* work: forgotten after each step */
-  const struct measured *measured;
-  double *v, *trial;             /* by place */
-  double *d;                     /* by unknown */
-  size_t limit, blocked;         /* streams: what shortened the last step; what stops the search */
-  size_t before;                 /* what shortened the step before */
-  int times;                     /* in a row */
-  double penalty;                /* of what exact rows are short of, each by its own size */
-};
-
-/* ---- Measures of a point ---- */
-
-static double
-squares (const double e[], size_t n)
-{
-  double sum = 0;
-  for (size_t i = 0; i < n; i++) {
-    sum += e[i] * e[i];
-  }
-  return sum;
-}
-
-/* What the exact rows are short of, by their sizes.  */
-static double
-shortfall (const struct tangent *t)
-{
-  double sum = 0;
-  for (size_t i = 0; i < t->equations.exact.count; i++) {
-    sum += fabs (t->c[i]) / t->size[i];
-  }
-  return sum;
-}
-
-/* The largest that any exact row is short of, by its terms.  */
-static double
-worst_row (const struct tangent *t)
-{
-  double worst = 0;
-  for (size_t i = 0; i < t->equations.exact.count; i++) {
-    if (fabs (t->c[i]) > 0) {
-      worst = fmax (worst, fabs (t->c[i]) / fmax (t->terms[i], t->size[i]));
-    }
-  }
-  return worst;
-}
-
-static double
-merit (const struct tangent *t, double penalty)
-{
-  return squares (t->e, t->equations.measured.count) + penalty * shortfall (t);
-}
+/* In usual flows: a stream, a flow that is next to nothing at the start, and what it is raised
+   to.  */
+static const double NOTHING = 1e-3, RAISED = 1e-4;
+/* How unlike the composition of an outlet is to that of its split at first; a third in each
+   pass.  */
+static const double LOOSE = 1;
+enum { PASSES = 3, BENT_PASSES = 5 };
+/* The barrier before zero, in squares of uncertainties, and how it is taken down: when figures
+   move by less than BARRIER_MOVE of theirs, or after some steps.  */
+static const double BARRIER = 1, BARRIER_FALL = 30, BARRIER_LEAST = 1e-9, BARRIER_MOVE = 0.1;
+enum { BARRIER_STEPS = 10 };
 
 /* ---- The start ---- */
-
-/* Raises a flow that is next to nothing, as something is divided by it.  */
-static void
-raise_stream (const struct measured *measured, size_t stream, double v[])
-{
-  size_t parts = measured->network->components;
-  if (fabs (system_total (measured->system, v, stream)) > NOTHING * measured->flow) {
-    return;
-  }
-  for (size_t j = stream * parts; j < (stream + 1) * parts; j++) {
-    if (measured->unknown[j] != NOWHERE && !measured->held[j]) {
-      v[j] = MEASURED_LEAST * measured->flow;
-    }
-  }
-}
-
-static void
-raise_all (const struct measured *measured, double v[])
-{
-  const struct system *system = measured->system;
-  for (size_t i = 0; i < measured->figures; i++) {
-    if (measured->figure[i].right.count > 0) {
-      size_t column = measured->figure[i].right.terms[0].column;
-      raise_stream (measured, column / measured->network->components, v);
-    }
-  }
-  for (size_t i = 0; i < system->bends; i++) {
-    raise_stream (measured, system->bend[i].inlet, v);
-    raise_stream (measured, system->bend[i].outlet, v);
-  }
-}
-
-static void
-add_step (const struct measured *measured, const double from[], double share, const double d[],
-          double to[])
-{
-  memcpy (to, from, measured->places * sizeof *to);
-  for (size_t k = 0; k < measured->unknowns; k++) {
-    to[measured->place[k]] += share * d[k];
-  }
-}
 
 /* Is every figure a plain form, and no split bent?  */
 static bool
@@ -135,10 +41,47 @@ is_linear (const struct measured *measured)
   return measured->system->bends == 0;
 }
 
-/* Equal flows everywhere, then some times the linear problem without bends and closures, ratios
-   taken as rows by the flows there are.  */
+/* Raises a flow that is next to nothing, as something is divided by it.  */
 static void
-start (struct search *s)
+raise_stream (const struct measured *measured, size_t stream, double v[])
+{
+  size_t parts = measured->network->components;
+  if (system_total (measured->system, v, stream) > NOTHING * measured->flow) {
+    return;
+  }
+  for (size_t j = stream * parts; j < (stream + 1) * parts; j++) {
+    if (measured->unknown[j] != NOWHERE && !measured->held[j]) {
+      v[j] = MEASURED_LEAST * measured->flow;
+    }
+  }
+}
+
+static void
+raise_all (const struct measured *measured, double v[])
+{
+  const struct system *system = measured->system;
+  size_t flows = measured->network->streams * measured->network->components;
+  for (size_t j = 0; j < flows; j++) {
+    bool none = measured->unknown[j] != NOWHERE && !measured->held[j]
+                && v[j] < DESCENT_BELOW * measured->flow;
+    v[j] = none ? RAISED * measured->flow : v[j];
+  }
+  for (size_t i = 0; i < measured->figures; i++) {
+    if (measured->figure[i].right.count > 0) {
+      size_t column = measured->figure[i].right.terms[0].column;
+      raise_stream (measured, column / measured->network->components, v);
+    }
+  }
+  for (size_t i = 0; i < system->bends; i++) {
+    raise_stream (measured, system->bend[i].inlet, v);
+    raise_stream (measured, system->bend[i].outlet, v);
+  }
+}
+
+/* Equal flows everywhere, then some times the linear problem, ratios taken as rows by the flows
+   there are.  */
+static void
+start (struct descent *s)
 {
   const struct measured *measured = s->measured;
   size_t columns = measured->system->columns;
@@ -147,202 +90,92 @@ start (struct search *s)
     double flow = measured->flow / (double) measured->network->components;
     s->v[i] = there ? (i < columns ? flow : 1) : 0;
   }
-  for (int pass = is_linear (measured) ? PASSES - 1 : 0; pass < PASSES; pass++) {
-    struct tangent t = tangent_make (s->arena, measured, s->v, true);
+  int passes = s->linear ? 1 : measured->system->bends > 0 ? BENT_PASSES : PASSES;
+  double loose = LOOSE;
+  for (int pass = 0; pass < passes; pass++, loose /= 3) {
+    struct easing ease = { .loose = loose };
+    struct tangent t = tangent_make (s->arena, measured, s->v, ease);
     const struct factor *factor = factor_make (s->arena, &t.equations);
     factor_solve (factor, s->arena, t.c, t.e, s->d);
-    add_step (measured, s->v, 1, s->d, s->v);
+    descent_add (measured, s->v, 1, s->d, s->v);
     arena_reset (s->arena);
-  }
-  raise_all (measured, s->v);
-}
-
-/* ---- A step ---- */
-
-/* Shortens SHARE so that what is NOW and would be THEN keeps a tenth of what it is.  */
-static double
-keep (double now, double then, double share)
-{
-  bool leaves = fabs (now) > 0 && 1 + share * (then / now - 1) < 1 - NEAREST;
-  return leaves ? NEAREST / (1 - then / now) : share;
-}
-
-/* The same of the total of a stream; a stream that shortens the step is noted.  */
-static double
-keep_stream (struct search *s, size_t stream, double share)
-{
-  const struct system *system = s->measured->system;
-  double kept = keep (system_total (system, s->v, stream), system_total (system, s->trial, stream),
-                      share);
-  s->limit = kept < share ? stream : s->limit;
-  return kept;
-}
-
-/* Of the right side of figure I, and of its closure.  */
-static double
-keep_figure (struct search *s, const struct figure *figure, double share)
-{
-  if (figure->right.count > 0 && !figure_is_void (s->measured, figure)) {
-    double kept = keep (form_value (&figure->right, s->v), form_value (&figure->right, s->trial),
-                        share);
-    size_t stream = figure->right.terms[0].column / s->measured->network->components;
-    s->limit = kept < share ? stream : s->limit;
-    share = kept;
-  }
-  if (figure->closure != NOWHERE) {
-    share = keep (s->v[figure->closure], s->trial[figure->closure], share);
-  }
-  return share;
-}
-
-/* How much of the step keeps every denominator on its side of zero.  */
-static double
-longest_share (struct search *s)
-{
-  const struct measured *measured = s->measured;
-  const struct system *system = measured->system;
-  double share = 1;
-  s->limit = NOWHERE;
-  add_step (measured, s->v, 1, s->d, s->trial);
-  for (size_t i = 0; i < measured->figures; i++) {
-    share = keep_figure (s, &measured->figure[i], share);
-  }
-  for (size_t i = 0; i < system->bends; i++) {
-    share = keep_stream (s, system->bend[i].inlet, share);
-    share = keep_stream (s, system->bend[i].outlet, share);
-  }
-  return share;
-}
-
-/* Is the stream that shortens the step next to nothing?  */
-static bool
-is_blocked (struct search *s)
-{
-  const struct measured *measured = s->measured;
-  s->times = s->limit == s->before ? s->times + 1 : 1;
-  s->before = s->limit;
-  if (s->limit == NOWHERE || s->limit >= measured->network->streams) {
-    return false;
-  }
-  double least = (s->times < PATIENCE ? BLOCKED : SLOWLY) * measured->flow;
-  if (fabs (system_total (measured->system, s->v, s->limit)) > least) {
-    return false;
-  }
-  s->blocked = s->limit;
-  return true;
-}
-
-/* What the weighted figures change by along the whole step.  */
-static double *
-moved_figures (struct search *s, const struct tangent *t)
-{
-  double *moved = ARENA_ARRAY (s->arena, t->equations.measured.count + 1, double);
-  sparse_times (&t->equations.measured, s->d, moved);
-  return moved;
-}
-
-/* What of the shortfall the whole step takes away, were all linear: nothing, where exact rows
-   contradict each other.  */
-static double
-gained (struct search *s, const struct tangent *t)
-{
-  const struct sparse *C = &t->equations.exact;
-  double *met = ARENA_ARRAY (s->arena, C->count + 1, double), gain = 0;
-  sparse_times (C, s->d, met);
-  for (size_t i = 0; i < C->count; i++) {
-    gain += (fabs (t->c[i]) - fabs (t->c[i] - met[i])) / t->size[i];
-  }
-  return fmax (gain, 0);
-}
-
-/* The slope of the merit along the step.  The penalty grows until the step goes downhill: Nocedal
-   and Wright, Numerical Optimization (2006), equation 18.36, with half for rho.  */
-static double
-slope (struct search *s, const struct tangent *t, const double moved[], double gain)
-{
-  double by = 0, square = squares (moved, t->equations.measured.count);
-  for (size_t i = 0; i < t->equations.measured.count; i++) {
-    by -= 2 * t->e[i] * moved[i];
-  }
-  if (gain > 0) {
-    s->penalty = fmax (s->penalty, (by + square) / (0.5 * gain));
-  }
-  return by - s->penalty * gain;
-}
-
-/* Takes SHARE of the step if that brings the merit down from BEFORE.  */
-static bool
-try_share (struct search *s, double share, double before, double downhill)
-{
-  add_step (s->measured, s->v, share, s->d, s->trial);
-  struct tangent there = tangent_make (s->arena, s->measured, s->trial, false);
-  double after = merit (&there, s->penalty);
-  if (!(after <= before + DESCENT * share * downhill + ROUNDING * before + 1e-18)) {
-    return false;
-  }
-  memcpy (s->v, s->trial, s->measured->places * sizeof *s->v);
-  return true;
-}
-
-/* Takes as much of the step as brings the merit down; false if none does.  The whole step may lead
-   across zero: a ratio of two flows below zero is one, and what is to be held shows only there.  */
-static bool
-take_step (struct search *s, const struct tangent *t, double downhill)
-{
-  double before = merit (t, s->penalty);
-  if (try_share (s, 1, before, downhill)) {
-    return true;
-  }
-  double share = longest_share (s);
-  for (int i = 0; i < HALVINGS; i++, share /= 2) {
-    if (try_share (s, share, before, downhill)) {
-      return true;
+    if (!s->linear) {
+      raise_all (measured, s->v);
     }
   }
-  return false;
 }
 
-static double
-largest (const double x[], size_t n)
+/* ---- The way ---- */
+
+enum going { GOES_ON, GOES_AGAIN, ARRIVED };
+
+/* What there is to do with the step: where nothing gains on what exact rows are short of, they
+   contradict each other, or their digits do; what moves little is the end, or the barrier's.    */
+static enum going
+look (struct descent *s, const struct tangent *t, double close, double last, double move,
+      int *tries)
 {
-  double most = 0;
-  for (size_t i = 0; i < n; i++) {
-    most = fmax (most, fabs (x[i]));
+  double worst = descent_worst (t);
+  bool met = worst < s->met || s->linear;
+  if (!(worst < s->met) && !descent_gains (s, t)) {
+    s->met = 2 * worst;
+    return worst <= AGREED ? GOES_AGAIN : ARRIVED;
   }
-  return most;
+  if (s->barrier > 0) {
+    if (!met || (!(move < BARRIER_MOVE && s->whole) && ++*tries <= BARRIER_STEPS)) {
+      return GOES_ON;
+    }
+    *tries = 0;
+    s->barrier /= BARRIER_FALL;
+    return s->barrier < BARRIER_LEAST ? ARRIVED : GOES_AGAIN;
+  }
+  if (met && s->damping > 0 && move < close) {
+    s->damping = 0;
+    return GOES_AGAIN;
+  }
+  bool still = move < close || (move < NOISE && move >= last / 2);
+  return met && still ? ARRIVED : GOES_ON;
 }
 
 /* Steps until one hardly moves anything.  */
 static bool
-iterate (struct search *s, const struct solve_options *options, double close, double *end,
-         struct fault *fault)
+iterate (struct descent *s, const struct solve_options *options, int steps, double close,
+         double *move, struct fault *fault)
 {
   double last = HUGE_VAL;
-  for (int step = 0; step < STEPS; step++) {
+  int tries = 0;
+  for (int step = 0; step < steps; step++) {
     arena_reset (s->arena);
     if (options->interrupted && options->interrupted ()) {
       return fault_set (fault, MESSAGE_INTERRUPTED, NULL, NULL);
     }
-    struct tangent t = tangent_make (s->arena, s->measured, s->v, false);
+    struct tangent t = descent_tangent (s, true);
+    bool met = descent_worst (&t) < s->met || s->linear;
+    if (!met) {
+      t = descent_tangent (s, false);
+    }
     const struct factor *factor = factor_make (s->arena, &t.equations);
-    factor_solve (factor, s->arena, t.c, t.e, s->d);
-    double *moved = moved_figures (s, &t);
-    double move = largest (moved, t.equations.measured.count), gain = gained (s, &t);
-    bool met = worst_row (&t) < MET || gain < 0.5 * shortfall (&t);
-    if (met && (move < close || (step > 2 && move < NOISE && move >= last / 2))) {
-      add_step (s->measured, s->v, 1, s->d, s->v);
-      *end = move;
+    const double *none = ARENA_ARRAY (s->arena, t.equations.measured.count + 1, double);
+    factor_solve (factor, s->arena, t.c, met || !s->blind ? t.e : none, s->d);
+    *move = descent_move (s, &t);
+    enum going going = look (s, &t, close, step > 2 ? last : HUGE_VAL, *move, &tries);
+    if (going == ARRIVED && !(s->barrier > 0)) {
+      descent_end (s, factor, &t);
+    }
+    if (going == ARRIVED) {
       return true;
     }
-    s->limit = NOWHERE;
-    bool taken = take_step (s, &t, slope (s, &t, moved, gain));
-    if (is_blocked (s)) {
+    if (going == GOES_AGAIN) {
+      continue;
+    }
+    bool taken = descent_step (s, factor, &t);
+    if (descent_is_blocked (s)) {
       return true;
     }
     if (!taken) {
       break;
     }
-    last = move;
+    last = *move;
   }
   return fault_set (fault, MESSAGE_NOT_CONVERGED, "the reconciliation", NULL);
 }
@@ -352,17 +185,50 @@ finish (struct arena *arena, const struct measured *measured, const double v[], 
 {
   double *kept = ARENA_ARRAY (arena, measured->places, double);
   memcpy (kept, v, measured->places * sizeof *kept);
+  for (size_t j = 0; j < measured->system->columns; j++) {
+    kept[j] = measured->held[j] ? 0 : kept[j];
+  }
   fit->v = kept;
-  fit->tangent = tangent_make (arena, measured, kept, false);
+  fit->tangent = tangent_make (arena, measured, kept, (struct easing) { .loose = 0 });
   fit->factor = factor_make (arena, &fit->tangent.equations);
   fit->rows = fit->tangent.equations.measured.count;
-  fit->chi2 = squares (fit->tangent.e, fit->rows);
+  fit->chi2 = descent_squares (&fit->tangent);
   fit->freedom = fit->rows - factor_rank (fit->factor);
-  fit->agreed = worst_row (&fit->tangent) <= AGREED;
+  fit->agreed = descent_worst (&fit->tangent) <= AGREED;
   fit->mismatch = 0;
   for (size_t i = 0; i < fit->tangent.equations.exact.count; i++) {
     double c = fabs (fit->tangent.c[i]) / (fit->tangent.size[i]);
     fit->mismatch = fmax (fit->mismatch, c);
+  }
+}
+
+/* Once more from the start, inside of what is above zero, and then on from there; INSIDE is where
+   that led to.  */
+static bool
+go_inside (struct descent *s, const struct solve_options *options, double close, double inside[],
+           double *move, struct fault *fault)
+{
+  struct fault own;
+  fault_init (&own, fault->arena);
+  arena_reset (s->arena);
+  descent_init (s);
+  start (s);
+  s->barrier = BARRIER;
+  if (!iterate (s, options, STEPS, close, move, &own) && own.kind == MESSAGE_INTERRUPTED) {
+    *fault = own;
+    return false;
+  }
+  memcpy (inside, s->v, s->measured->places * sizeof *inside);
+  descent_init (s);
+  return iterate (s, options, STEPS, close, move, fault);
+}
+
+static void
+start_from (struct descent *s, const double from[])
+{
+  memcpy (s->v, from, s->measured->places * sizeof *s->v);
+  for (size_t j = 0; j < s->measured->system->columns; j++) {
+    s->v[j] = s->measured->held[j] ? 0 : s->v[j];
   }
 }
 
@@ -371,17 +237,30 @@ measured_minimise (struct arena *arena, const struct measured *measured,
                    const struct solve_options *options, const double from[], double close,
                    struct fit *fit, struct fault *fault)
 {
-  struct search s = { .arena = arena_create (), .measured = measured, .blocked = NOWHERE };
+  struct descent s = { .arena = arena_create (), .measured = measured,
+                       .linear = is_linear (measured) };
+  double *inside = ARENA_ARRAY (arena, measured->places, double);
+  struct fault own;
+  fault_init (&own, fault->arena);
+  descent_init (&s);
   s.v = ARENA_ARRAY (arena, measured->places, double);
   s.trial = ARENA_ARRAY (arena, measured->places, double);
   s.d = ARENA_ARRAY (arena, measured->unknowns, double);
   if (from) {
-    memcpy (s.v, from, measured->places * sizeof *s.v);
+    start_from (&s, from);
   } else {
     start (&s);
   }
   fit->move = HUGE_VAL;
-  bool done = iterate (&s, options, close, &fit->move, fault);
+  fit->inside = NULL;
+  bool done = iterate (&s, options, from ? STEPS : FIRST_STEPS, close, &fit->move, &own);
+  bool good = done && descent_is_inside (&s) && s.blocked == NOWHERE;
+  if (good || from || s.linear || own.kind == MESSAGE_INTERRUPTED) {
+    *fault = done ? *fault : own;
+  } else {
+    done = go_inside (&s, options, close, inside, &fit->move, fault);
+    fit->inside = inside;
+  }
   if (done) {
     finish (arena, measured, s.v, fit);
     fit->blocked = s.blocked;

@@ -17,6 +17,7 @@ struct arena; struct fault; struct solve_options;
 
 struct fit {
   const double *v;               /* by place */
+  const double *inside;          /* the last point on the way with no flow below zero, or null */
   double chi2;
   size_t rows, freedom;          /* figures that count; how many of them are surplus */
   double move;                   /* the largest move of a figure in the last step, in its u */

@@ -20,13 +20,27 @@ struct attempt {
   enum standing *standing;
   struct measured *measured;
   struct fit fit;
+  bool found;                    /* a fit in which the exact rows hold */
 };
 
+/* From where the facts read otherwise led to, if they did.  Places for closures differ.  */
 static bool
 minimise_again (struct attempt *a, struct fault *fault)
 {
+  const struct measured *before = a->found ? a->measured : NULL;
+  double *from = NULL;
   a->measured = measured_make (a->arena, a->network, a->standing);
-  return minimise_bounded (a->arena, a->measured, a->options, &a->fit, fault);
+  if (before) {
+    size_t columns = before->system->columns;
+    from = ARENA_ARRAY (a->arena, a->measured->places, double);
+    for (size_t i = 0; i < a->measured->places; i++) {
+      from[i] = i < columns ? a->fit.v[i] : 1;
+    }
+    memcpy (a->measured->held, before->held, columns * sizeof *before->held);
+  }
+  bool done = minimise_bounded (a->arena, a->measured, a->options, from, &a->fit, fault);
+  a->found = done && a->fit.agreed;
+  return done;
 }
 
 /* ---- Figures without uncertainty ---- */
@@ -93,6 +107,28 @@ fit_is_good (const struct attempt *a)
   return a->fit.agreed && chi2_passes (a->fit.chi2, a->fit.freedom, a->options->confidence);
 }
 
+/* Exact figures by their digits; where that leads nowhere all stays as it was.  */
+static void
+fit_by_digits (struct attempt *a, struct fault *fault)
+{
+  struct attempt before = *a;
+  struct fault own;
+  fault_init (&own, fault->arena);
+  enum standing *stated = ARENA_ARRAY (a->arena, a->network->facts + 1, enum standing);
+  memcpy (stated, a->standing, a->network->facts * sizeof *stated);
+  before.standing = stated;
+  if (!stand_by_digits (a)) {
+    return;
+  }
+  bool done = minimise_again (a, &own) && (!stand_back (a) || minimise_again (a, &own));
+  if (own.kind == MESSAGE_INTERRUPTED) {
+    *fault = own;
+  }
+  if (!done || !a->found) {
+    *a = before;
+  }
+}
+
 /* Figures without uncertainty are exact, as stated.  If they cannot all hold beside the measured
    ones, or these fail the test for it, what is wrong may be a last digit: exact and measured
    figures are one system then.  */
@@ -102,19 +138,13 @@ find_fit (struct attempt *a, struct fault *fault)
   struct fault own;
   fault_init (&own, fault->arena);
   stand_as_stated (a);
-  bool done = minimise_again (a, &own);
-  bool good = done && fit_is_good (a);
-  if (good || own.kind == MESSAGE_INTERRUPTED || !stand_by_digits (a)) {
-    if (!done) {
-      *fault = own;
-    }
-  } else {
-    done = minimise_again (a, fault) && (!stand_back (a) || minimise_again (a, fault));
+  if (!(minimise_again (a, &own) && fit_is_good (a)) && own.kind != MESSAGE_INTERRUPTED) {
+    fit_by_digits (a, &own);
   }
-  if (done && !a->fit.agreed) {
-    return fault_set (fault, MESSAGE_NOT_CONVERGED, "the reconciliation", NULL);
+  if (own.kind == MESSAGE_INTERRUPTED) {
+    return fault_set (fault, MESSAGE_INTERRUPTED, NULL, NULL);
   }
-  return done;
+  return a->found || fault_set (fault, MESSAGE_NOT_CONVERGED, "the reconciliation", NULL);
 }
 
 /* ---- The answer ---- */

@@ -5,7 +5,11 @@
 #include <math.h>
 #include "support/arena.h"
 
-/* How uncertain a first guess is, in usual flows.  */
+/* What is lost of a figure as it is worked out, relative.  */
+static const double LOST = 1e-14;
+/* In usual flows: what is less counts as this in a damped step.  */
+static const double LITTLE = 1e-9;
+/* How uncertain a first guess is, in parts of itself.  */
 static const double GUESS = 30;
 
 /* Adds the rows of the system to C, and what they are short of.  */
@@ -96,15 +100,52 @@ add_figure_row (const struct measured *measured, const struct figure *figure, co
   return (figure->y - figure_value (figure, v)) / figure->u;
 }
 
-/* At the start every flow is measured, ever so weakly, as what it is now: what the figures leave
-   open or nearly so stays where it is.  */
+/* The outlets of splits have the composition of their inlet as it is now, but for LOOSE of it.  */
 static void
-add_guesses (const struct measured *measured, struct tangent *t)
+add_likeness (const struct measured *measured, const double v[], double loose, struct tangent *t)
 {
+  size_t parts = measured->network->components;
   struct sparse *G = &t->equations.measured;
+  for (size_t i = 0; i < measured->system->bends; i++) {
+    const struct bend *bend = &measured->system->bend[i];
+    const double *in = &v[bend->inlet * parts], *out = &v[bend->outlet * parts];
+    const size_t *unknown = &measured->unknown[bend->outlet * parts];
+    double all = 0, flow = 0;
+    for (size_t c = 0; c < parts; c++) {
+      all += fmax (in[c], 0);
+      flow += out[c];
+    }
+    double least = MEASURED_LEAST * measured->flow, weight = 1 / (loose * fmax (flow, least));
+    for (size_t c = 0; c < parts && all > 0; c++) {
+      double x = fmax (in[c], 0) / all;
+      sparse_begin (G);
+      for (size_t k = 0; k < parts; k++) {
+        if (unknown[k] != NOWHERE) {
+          sparse_add (G, unknown[k], weight * ((k == c ? 1 : 0) - x));
+        }
+      }
+      t->e[G->count - 1] = weight * (x * flow - out[c]);
+    }
+  }
+}
+
+/* Each unknown is measured, ever so weakly, as what it is now: WEIGHT for all of it.  Flows are
+   lifted above that.  */
+static void
+add_guesses (const struct measured *measured, const double v[], struct easing ease,
+             struct tangent *t)
+{
+  bool loose = ease.loose > 0;
+  double weight = loose ? 1 / GUESS : ease.damping;
+  struct sparse *G = &t->equations.measured;
+  size_t flows = measured->network->streams * measured->network->components;
   for (size_t k = 0; k < measured->unknowns; k++) {
+    double least = (loose ? MEASURED_LEAST : LITTLE) * measured->scale[k];
+    size_t place = measured->place[k];
+    bool rises = place < flows && !measured->held[place];
     sparse_begin (G);
-    sparse_add (G, k, 1 / (GUESS * measured->scale[k]));
+    sparse_add (G, k, weight / fmax (fabs (v[place]), rises ? least : measured->scale[k]));
+    t->e[G->count - 1] = rises ? ease.lift : 0;
   }
 }
 
@@ -119,14 +160,18 @@ measured_terms (const struct measured *measured)
 }
 
 static void
-add_measured (struct arena *arena, const struct measured *measured, const double v[], bool start,
-              struct tangent *t)
+add_measured (struct arena *arena, const struct measured *measured, const double v[],
+              struct easing ease, struct tangent *t)
 {
   struct sparse *G = &t->equations.measured;
   size_t *of = ARENA_ARRAY (arena, measured->figures + 1, size_t);
-  size_t guesses = start ? measured->unknowns : 0;
-  *G = sparse_make (arena, measured->figures + guesses, measured_terms (measured) + guesses);
-  t->e = ARENA_ARRAY (arena, measured->figures + guesses + 1, double);
+  bool start = ease.loose > 0;
+  size_t parts = measured->network->components, like = start ? measured->system->bends : 0;
+  size_t guesses = start || ease.damping > 0 ? measured->unknowns : 0;
+  size_t most = measured->figures + guesses + like * parts;
+  *G = sparse_make (arena, most, measured_terms (measured) + guesses + like * parts * parts);
+  t->e = ARENA_ARRAY (arena, most + 1, double);
+  t->noise = ARENA_ARRAY (arena, most + 1, double);
   for (size_t i = 0; i < measured->figures; i++) {
     const struct figure *figure = &measured->figure[i];
     if (!measured->left_out[i] && !figure_is_void (measured, figure)) {
@@ -134,22 +179,28 @@ add_measured (struct arena *arena, const struct measured *measured, const double
       double e = start ? add_start_row (measured, figure, v, G)
                        : add_figure_row (measured, figure, v, G);
       t->e[G->count - 1] = e;
+      t->noise[G->count - 1] = LOST * fabs (figure->y / figure->u);
     }
   }
   t->figure = of;
+  t->figures = G->count;
   if (start) {
-    add_guesses (measured, t);
+    add_likeness (measured, v, ease.loose, t);
+  }
+  if (guesses > 0) {
+    add_guesses (measured, v, ease, t);
   }
 }
 
 struct tangent
-tangent_make (struct arena *arena, const struct measured *measured, const double v[], bool start)
+tangent_make (struct arena *arena, const struct measured *measured, const double v[],
+              struct easing ease)
 {
   const struct system *system = measured->system;
   struct tangent t = { .equations = { .unknowns = measured->unknowns,
                                       .scale = measured->scale, .order = measured->order } };
   struct rows bent = { .count = 0 };
-  if (!start && system->bends > 0) {
+  if (!(ease.loose > 0) && system->bends > 0) {
     bent = system_bent (arena, system, v);
   }
   size_t most = system->rows.count + bent.count + system->columns;
@@ -168,6 +219,6 @@ tangent_make (struct arena *arena, const struct measured *measured, const double
     bool bend = i >= t.bends && i < t.held;      /* a measure that does not change with v */
     t.size[i] = bend ? measured->flow : sparse_row_size (&t.equations.exact, i, measured->scale);
   }
-  add_measured (arena, measured, v, start, &t);
+  add_measured (arena, measured, v, ease, &t);
   return t;
 }

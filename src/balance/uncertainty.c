@@ -5,6 +5,7 @@
 
 #include <math.h>
 #include <string.h>
+#include "balance/bounded.h"
 #include "balance/factor.h"
 #include "balance/solution.h"
 #include "support/arena.h"
@@ -14,6 +15,7 @@ struct covariance {
   const struct measured *measured;       /* its numbers only; the network is the caller's */
   const double *v;                       /* by column */
   const struct factor *factor;
+  const struct factor *loose;            /* nothing held but whole streams; null: as above */
 };
 
 /* ---- What is open ---- */
@@ -76,8 +78,43 @@ fit_open_streams (struct arena *arena, const struct measured *measured, const st
 
 /* ---- Uncertainty ---- */
 
+/* What is held at zero because it would come out below is no better known for that.  A stream that
+   is held as a whole stays so where something is divided by it.  */
+const struct factor *
+fit_loose_factor (struct arena *arena, struct measured *measured, const struct fit *fit)
+{
+  size_t parts = measured->network->components, flows = measured->network->streams * parts;
+  bool *held = measured->held, any = false;
+  bool *divides = ARENA_ARRAY (arena, measured->network->streams + 1, bool);
+  for (size_t i = 0; i < measured->figures; i++) {
+    const struct form *right = &measured->figure[i].right;
+    for (size_t k = 0; k < right->count; k++) {
+      divides[right->terms[k].column / parts] = true;
+    }
+  }
+  for (size_t i = 0; i < measured->system->bends; i++) {
+    divides[measured->system->bend[i].inlet] = divides[measured->system->bend[i].outlet] = true;
+  }
+  measured->held = ARENA_ARRAY (arena, measured->system->columns, bool);
+  for (size_t j = 0; j < flows; j++) {
+    double flow = system_total (measured->system, fit->v, j / parts);
+    bool whole = !(flow > BOUNDED_BELOW * measured->flow) && divides[j / parts];
+    measured->held[j] = held[j] && whole;
+    any = any || measured->held[j] != held[j];
+  }
+  const struct factor *loose = NULL;
+  if (any) {
+    struct arena *work = arena_create ();
+    struct tangent t = tangent_make (work, measured, fit->v, (struct easing) { .loose = 0 });
+    loose = factor_make (arena, &t.equations);
+    arena_destroy (work);
+  }
+  measured->held = held;
+  return loose;
+}
+
 const struct covariance *
-covariance_keep (struct arena *arena, const struct measured *measured, const struct fit *fit)
+covariance_keep (struct arena *arena, struct measured *measured, const struct fit *fit)
 {
   struct covariance *kept = ARENA_NEW (arena, struct covariance);
   struct measured *copy = ARENA_NEW (arena, struct measured);
@@ -90,7 +127,17 @@ covariance_keep (struct arena *arena, const struct measured *measured, const str
   kept->measured = copy;
   kept->v = v;
   kept->factor = factor_make (arena, &fit->tangent.equations);
+  kept->loose = fit_loose_factor (arena, measured, fit);
   return kept;
+}
+
+/* NAN: not settled.  */
+static double
+spread_of (const struct factor *factor, struct arena *scratch, const struct sparse *row)
+{
+  struct spread spread;
+  return factor_spread (factor, scratch, row, 0, &spread)
+           ? sqrt (spread_product (&spread, &spread)) : (double) NAN;
 }
 
 double
@@ -106,14 +153,16 @@ solution_uncertainty (const struct solution *solution, const struct network *net
   struct figure figure = { .left = *left, .right = right ? *right : none, .closure = NOWHERE };
   struct arena *scratch = arena_create ();
   struct sparse row = sparse_make (scratch, 1, left->count + figure.right.count);
-  struct spread spread;
   double u = (double) NAN;
   bool nothing = right && !(fabs (form_value (right, covariance->v)) > 0);
   if (!nothing) {
     figure_row (covariance->measured, &figure, covariance->v, 1, &row);
   }
-  if (!nothing && factor_spread (covariance->factor, scratch, &row, 0, &spread)) {
-    u = sqrt (spread_product (&spread, &spread));
+  if (!nothing && covariance->loose) {
+    u = spread_of (covariance->loose, scratch, &row);
+  }
+  if (!nothing && isnan (u)) {
+    u = spread_of (covariance->factor, scratch, &row);
   }
   arena_destroy (scratch);
   return u;

@@ -15,7 +15,11 @@ void fit_open_streams (struct arena *, const struct measured *, const struct fit
                        bool fraction[]);
 
 /* What solution_uncertainty needs, copied into ARENA.  */
-const struct covariance *covariance_keep (struct arena *, const struct measured *,
+const struct covariance *covariance_keep (struct arena *, struct measured *,
                                           const struct fit *) MUST_CHECK;
+/* The factor of FIT without the flows that are held at zero, for what is uncertain of them; null:
+   none is held.  */
+const struct factor *fit_loose_factor (struct arena *, struct measured *, const struct fit *)
+  MUST_CHECK;
 
 #endif
