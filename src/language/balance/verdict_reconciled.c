@@ -234,6 +234,36 @@ tell_eliminations (struct verdict_maker *m)
   }
 }
 
+/* What is held at zero: components by name, a stream where nothing of it flows.  */
+static void
+tell_held (struct verdict_maker *m)
+{
+  const struct solution *s = m->solution;
+  struct text_list held = { .at = NULL };
+  size_t n = m->plant->network.components, last = m->plant->stream_count;
+  for (size_t i = 0; i < s->held_count; i++) {
+    size_t stream = s->held[i] / n;
+    double flow = 0;
+    for (size_t c = 0; stream < m->plant->stream_count && c < n; c++) {
+      flow += s->value[stream * n + c];
+    }
+    const char *name = stream < m->plant->stream_count ? m->plant->stream[stream].name : NULL;
+    if (name && n > 1 && flow > 0) {
+      name = arena_format (m->arena, "%s of %s", component_text (m->plant, s->held[i] % n), name);
+    } else if (stream == last) {
+      continue;
+    }
+    last = stream;
+    if (name) {
+      text_list_add (m->arena, &held, name);
+    }
+  }
+  const char *joined = verdict_joined (m, "held at zero", &held);
+  if (held.count > 0 && m->ev->result) {
+    result_remark (m->ev->result, MESSAGE_NOTE_HELD_AT_ZERO, joined, NULL);
+  }
+}
+
 static void
 tell_by_digits (struct verdict_maker *m)
 {
@@ -245,16 +275,6 @@ tell_by_digits (struct verdict_maker *m)
   const char *joined = verdict_joined (m, "counted with their digits", &lines);
   if (lines.count > 0 && m->ev->result) {
     result_remark (m->ev->result, MESSAGE_TAKEN_DIGITS, joined, NULL);
-  }
-  struct text_list held = { .at = NULL };
-  size_t n = m->plant->network.components;
-  for (size_t i = 0; i < m->solution->held_count; i++)
-    if (m->solution->held[i] < n * m->plant->stream_count) {
-      text_list_add (m->arena, &held, m->plant->stream[m->solution->held[i] / n].name);
-    }
-  joined = verdict_joined (m, "held at zero", &held);
-  if (m->solution->held_count > 0 && m->ev->result) {
-    result_remark (m->ev->result, MESSAGE_NOTE_HELD_AT_ZERO, joined, NULL);
   }
 }
 
@@ -281,4 +301,5 @@ verdict_reconciled (struct verdict_maker *m)
   tell_leaks (m);
   tell_eliminations (m);
   tell_by_digits (m);
+  tell_held (m);
 }
