@@ -3,6 +3,7 @@ EXTRA_DIST += \
   %D%/bad \
   %D%/balance_cases \
   %D%/contract.gw \
+  %D%/metered.py \
   %D%/quarrels.tsv \
   %D%/scenarios \
   %D%/session.py \
