@@ -173,17 +173,25 @@ real_volume_share (struct conversion *c, const struct host *host, double *phi,
   return true;
 }
 
+/* Does the gas have a figure of the species, if zero?  */
+static bool
+states (const struct composition *gas, const struct species *species)
+{
+  for (size_t i = 0; i < gas->count; i++) {
+    if (gas->species[i] == species) {
+      return true;
+    }
+  }
+  return false;
+}
+
 void
 note_none_stated (struct conversion *c)
 {
   const struct value *v = c->value;
   const struct composition *gas = v->of_stream ? v->stream.gas : v->gas->closed;
   for (size_t k = 0; gas && k < v->species.count; k++) {
-    bool stated = false;
-    for (size_t i = 0; i < gas->count; i++) {
-      stated = stated || gas->species[i] == v->species.at[k];
-    }
-    if (!stated) {
+    if (!states (gas, v->species.at[k])) {
       note (c->ev, MESSAGE_NOTE_NONE_STATED,
             v->species.count == 1 ? v->part : v->species.at[k]->key, NULL, NULL);
     }
@@ -238,6 +246,29 @@ record_per_volume (const struct conversion *c, double x, double per, double Vm, 
                         SYMBOL ("V", Vm, "m3/mol")));
 }
 
+/* A reference oxygen takes the figure dry unless it is said to be wet, and needs an oxygen that
+   somebody stated, if as none.                                                                  */
+static bool
+settle_reference_oxygen (struct conversion *c)
+{
+  const struct value *v = c->value;
+  const struct composition *gas = v->of_stream ? v->stream.gas : v->gas->closed;
+  if (isnan (c->state.oxygen)) {
+    return true;
+  }
+  if (gas && !states (gas, c->ev->session->oxygen)) {
+    fault_set_at (c->ev->fault, MESSAGE_KIND_WRONG, c->at,
+                  "no O2 is stated in the gas: nobody knows at what oxygen it was measured", NULL);
+    fault_hint (c->ev->fault, "state it in the list, O2 0 if it holds none; or 100 ppm of %s at "
+                "5 %%O2 in ...", v->part);
+    return false;
+  }
+  const bool wet = (c->words & WORD_WET) != 0 || c->ev->settings->trial.wet
+                   || c->state.moisture != MOISTURE_NONE;
+  c->words |= wet ? 0 : WORD_DRY;
+  return true;
+}
+
 /* A share or a concentration of the component.  */
 static bool
 concentration (struct conversion *c)
@@ -247,7 +278,8 @@ concentration (struct conversion *c)
   if (c->ev->result) {
     note_none_stated (c);
   }
-  if (!host_of (c, &host) || !counted_mass (c, &per_mass, &per_moles)
+  if (!settle_reference_oxygen (c) || !host_of (c, &host)
+      || !counted_mass (c, &per_mass, &per_moles)
       || !oxygen_factor (c, dry_oxygen (c, host.gas), c->what, &factor)) {
     return false;
   }
