@@ -12,7 +12,7 @@ is_heading (const struct laboratory *lab, struct arena *arena, size_t r, enum he
 {
   if (kind == HEADING_NAMES || kind == HEADING_SAMPLE || kind == HEADING_EMPTY)
     return true;
-  if (kind == HEADING_DATE || kind == HEADING_OTHER_WORD || kind == HEADING_UNIT)
+  if (kind == HEADING_DATE || kind == HEADING_UNIT)
     return false;
   for (size_t k = lab->names + 1; k < lab->rows[r].count; k++) {
     enum heading_kind over = heading_read (arena, lab->words, cell_slice (lab, r, k)).kind;

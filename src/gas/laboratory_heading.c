@@ -83,7 +83,7 @@ slice_text (struct arena *arena, struct slice s)
 /* As laboratories write them, squeezed; from memory, no source.  */
 static const char *const names_words[] = {
   "component", "components", "componentname", "compound", "compounds", "species", "constituent",
-  "analyte", "gas", "substance", "part", "parts", "komponente", "formula", NULL
+  "analyte", "gas", "substance", "part", "parts", "komponente", "formula", "peakname", NULL
 };
 static const char *const sample_words[] = {
   "sample", "samples", "sampleid", "sampleno", "samplenumber", "samplename", "id", "no", "number",
@@ -99,7 +99,7 @@ static const char *const total_words[] = {
 };
 static const char *const amount_words[] = {
   "amount", "value", "result", "results", "concentration", "content", "fraction", "share",
-  "composition", "figure", "reading", "measured", "gehalt", "wert", NULL
+  "composition", "figure", "reading", "measured", "conc", "gehalt", "wert", NULL
 };
 static const char *const unit_words[] = { "unit", "units", "basis", "einheit", NULL };
 static const char *const other_words[] = {
@@ -109,7 +109,7 @@ static const char *const other_words[] = {
   "humidity", "density", "relativedensity", "molarmass", "wobbe", "wobbeindex",
   "grosscalorificvalue", "netcalorificvalue", "calorificvalue", "dewpoint", "retentiontime",
   "peakarea", "area", "area%", "areacounts", "height", "peakheight", "rt", "rettime", "retention",
-  "rrt", "response", "responsefactor", "rf", "status",
+  "rrt", "response", "responsefactor", "rf", "status", "peak", "peakno", "peaknumber", "#", "gpm",
   "approved", "checked", "checkedby", "signed", "signature",
   "bemerkung", "bearbeiter", "limit", "detectionlimit", "lod", "loq", NULL
 };
@@ -118,7 +118,9 @@ static const char *const standard_words[] = {
   "unc", "uncertainty", "standarduncertainty", "stdunc", "stduncertainty", "\xC2\xB1", "+/",
   "unsicherheit", NULL
 };
-static const char *const expanded_words[] = { "expandeduncertainty", "expandedunc", NULL };
+static const char *const expanded_words[] = {
+  "expandeduncertainty", "expandedunc", "u95", NULL
+};
 static const char *const relative_words[] = {
   "urel", "relu", "u%", "\xC2\xB1%", "relativeuncertainty", "reluncertainty",
   "relativestandarduncertainty", NULL
@@ -136,12 +138,15 @@ static const struct { const char *const *words; enum heading_kind kind; } vocabu
 static const struct { const char *word, *unit; } shares[] = {
   { "mol%", "mol%" }, { "mole%", "mol%" }, { "%mol", "mol%" }, { "%mole", "mol%" },
   { "molpercent", "mol%" }, { "molepercent", "mol%" }, { "%(mol)", "mol%" },
-  { "amount%", "mol%" },
+  { "amount%", "mol%" }, { "%mol/mol", "mol%" }, { "%(mol/mol)", "mol%" },
+  { "mol/mol%", "mol%" },
   { "vol%", "vol%" }, { "%vol", "vol%" }, { "volpercent", "vol%" }, { "volume%", "vol%" },
-  { "%(v/v)", "vol%" }, { "%v/v", "vol%" },
+  { "%(v/v)", "vol%" }, { "%v/v", "vol%" }, { "v/v%", "vol%" },
   { "mass%", "mass%" }, { "%mass", "mass%" }, { "masspercent", "mass%" }, { "wt%", "mass%" },
   { "%wt", "mass%" }, { "weight%", "mass%" }, { "%weight", "mass%" }, { "gew%", "mass%" },
-  { "%(m/m)", "mass%" }, { "%w/w", "mass%" }, { "%(w/w)", "mass%" }
+  { "%(m/m)", "mass%" }, { "%m/m", "mass%" }, { "m/m%", "mass%" }, { "%w/w", "mass%" },
+  { "%(w/w)", "mass%" }, { "w/w%", "mass%" },
+  { "ppm(v)", "ppm" }, { "ppm(mol)", "ppm" }, { "vpm", "ppm" }
 };
 
 const struct unit *
@@ -248,6 +253,16 @@ is_break (char c)
          || c == ')' || c == ']';
 }
 
+/* Two units contradict each other, and so do a bare per cent and a unit that is none.  */
+static bool
+contradicts (const struct heading *h, const struct unit *unit, bool percent)
+{
+  const struct unit *of_share = unit != NULL ? unit : h->unit;
+  if (h->unit != NULL && unit != NULL)
+    return h->unit != unit;
+  return (h->percent || percent) && of_share != NULL && strchr (of_share->spelling, '%') == NULL;
+}
+
 /* All of S as one unit or one flag.  */
 static bool
 take_one (struct arena *arena, const struct laboratory_words *words, struct slice s,
@@ -258,11 +273,11 @@ take_one (struct arena *arena, const struct laboratory_words *words, struct slic
   if (take_flag (s, h))
     return true;
   const struct unit *unit = slice_unit (arena, words, s, &text, &percent);
-  if (unit == NULL && !percent)
+  if ((unit == NULL && !percent) || contradicts (h, unit, percent))
     return false;
-  h->unit = unit;
-  h->unit_text = text;
-  h->percent = percent;
+  h->unit = unit != NULL ? unit : h->unit;
+  h->unit_text = unit != NULL ? text : h->unit_text;
+  h->percent = h->unit == NULL;
   return true;
 }
 
@@ -407,6 +422,14 @@ read_unknown (struct arena *arena, const struct laboratory_words *words, struct 
   }
 }
 
+/* A column of something else, headed by its unit: Btu/scf, kJ/mol.  One letter may name a sample,
+   so that only what has a stroke counts.                                                        */
+static bool
+is_unit_of_another (const struct laboratory_words *words, struct slice s)
+{
+  return memchr (s.at, '/', s.n) != NULL && unit_find (words->units, s.at, s.n, NULL) != NULL;
+}
+
 struct heading
 heading_read (struct arena *arena, const struct laboratory_words *words, struct slice text)
 {
@@ -420,5 +443,7 @@ heading_read (struct arena *arena, const struct laboratory_words *words, struct 
     return h;
   h = (struct heading) { .kind = HEADING_UNKNOWN };
   read_unknown (arena, words, s, &h);
+  if (h.kind == HEADING_UNKNOWN && is_unit_of_another (words, s))
+    h.kind = HEADING_OTHER_WORD;
   return h;
 }

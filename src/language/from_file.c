@@ -4,6 +4,7 @@
 #include <errno.h>
 #include <string.h>
 #include <sys/stat.h>
+#include "gas/air.h"
 #include "gas/laboratory.h"
 #include "gas/species.h"
 #include "result/result.h"
@@ -200,6 +201,31 @@ dry_holds (struct session *session, const struct statement *s, const struct labo
   return false;
 }
 
+/* A lump of the file, such as C6+, is a gas that was defined, or a peak that is known.  */
+static bool
+lump_holds (struct session *session, const struct statement *s, const struct laboratory_part *part,
+            struct fault *fault)
+{
+  const struct species *found;
+  const char *candidates;
+  struct part peak[AIR_PEAK_PARTS];
+  const size_t n = strlen (part->name);
+  if (!strchr (part->name, '+') || is_gas_of (session, part->name, n)
+      || species_find (session->vocabulary.species, part->name, n, &found, &candidates)
+           != SPECIES_AMBIGUOUS
+      || air_peak (session->vocabulary.species, part->name, n, peak) > 0) {
+    return true;
+  }
+  fault_set_at (fault, MESSAGE_LABORATORY_NAME, s->text_at,
+                arena_format (fault->arena, "%s:%d:%d", s->text, part->line, part->column),
+                arena_format (fault->arena, "'%s' has more than one meaning: %s", part->name,
+                              candidates));
+  fault_facts (fault, arena_format (fault->arena, "for all of them define it first, as a list or "
+                                    "with what is known: gas %s with molar mass ...", part->name),
+               NULL);
+  return false;
+}
+
 /* A sample as a list of parts, as if it were typed: a copy of the statement's list with the
    sample's parts.  *REMARKS, if not null, takes what has to be said of it.                      */
 static struct node *
@@ -222,7 +248,8 @@ file_list (struct session *session, struct arena *arena, const struct statement 
   for (size_t i = 0; i < parts.count; i++) {
     const struct laboratory_part *part = &parts.at[i];
     bool drop;
-    if (!dry_holds (session, s, part, dry, &drop, fault)) {
+    if (!lump_holds (session, s, part, fault)
+        || !dry_holds (session, s, part, dry, &drop, fault)) {
       return NULL;
     }
     if (drop) {

@@ -80,6 +80,8 @@ BAD = [
      "laboratory-name", "1:17", "'Nx2'"),
     ("a name of two meanings", H + "CH4,60\nxylene,39\nN2,1\n", "",
      "laboratory-name", "3:1", "more than one meaning"),
+    ("a lump nobody defined", H + "CH4,60\nC6+,40\n", "",
+     "laboratory-name", "3:5", "gas C6+ with molar mass"),
     ("a component twice", H + "CH4,60\nCO2,39\nCH4,1\n", "",
      "laboratory-twice", "4:1", "it stands at FILE:2:1"),
     ("a component twice, by two names", H + "methane,60\nCO2,39\nCH4,1\n", "",
@@ -145,6 +147,9 @@ BAD = [
      "the file says mol%, the statement mass%"),
     ("a column of units with another word", "component,amount,unit\nCH4,60,mol%\nCO2,40,bar\n",
      "", "laboratory-unit", "3:8", "'bar'"),
+    ("per cent of a unit that is none",
+     "component,amount,unit\nCH4,60,mol%\nCO2,40,% ppm\n", "", "laboratory-unit", "3:8",
+     "'% ppm'"),
     ("two units", "component,mol%,mass%\nCH4,60,40\nCO2,40,60\n", "", "laboratory-unit", "1:16",
      "mol% or those in mass%"),
     ("an uncertainty in another measure", "component,mol%,u [mass%]\nCH4,60,1\nCO2,40,1\n", "",
@@ -238,6 +243,8 @@ GOOD = [
      ""),
     ("units in a column", "component,amount,unit\nCH4,60.5,mol%\nCO2,38.25,mol%\nN2,1.2,mol%\n"
      "H2S,500,ppm\n", ""),
+    ("per cent of moles and of volume", "component,amount,unit\nCH4,60.5,% mol/mol\n"
+     "CO2,38.25,mol/mol %\nN2,1.2,% (v/v)\nH2S,500,ppm(v)\n", ""),
     ("units in a row", "sample,CH4,CO2,N2,H2S\n,mol%,mol%,mol%,ppm\nA,60.5,38.25,1.2,500\n", ""),
     ("units in a row, by components", "component,A\n,mol%\nCH4,60.5\nCO2,38.25\nN2,1.2\n"
      "H2S,0.05\n", ""),
@@ -290,6 +297,11 @@ GOOD = [
     ("an instrument's own table", "Component Name,Retention Time [min],Area,Mole %,Weight %\n"
      "Methane,1.2,12345,60.5,36\nCarbon dioxide,2.2,1234,38.25,62\nNitrogen,3.1,123,1.2,1\n"
      "Hydrogen sulfide,4.5,12,0.05,1\nTotal,,,100,100\n", "mol%"),
+    ("peaks numbered, what burns beside them", "Peak,Component,Conc. [mol%],Btu/scf,GPM\n"
+     "1,Methane,60.5,612.6,\n2,Carbon dioxide,38.25,,\n3,Nitrogen,1.2,,\n"
+     "4,Hydrogen sulfide,0.05,0.3,0.01\n,Total,100,612.9,0.01\n", ""),
+    ("peaks headed as peaks", "Peak,Amount [mol%],Area\nMethane,60.5,1\nCarbon dioxide,38.25,2\n"
+     "Nitrogen,1.2,3\nHydrogen sulfide,0.05,4\n", ""),
     ("a sample named beside its components", "sample,component,mol%\nA,CH4,60.5\nA,CO2,38.25\n"
      "A,N2,1.2\nA,H2S,0.05\n", ""),
     ("a component of a sample in each row", "Sample ID;Analyte;Result;Unit\nB;CH4;1,5;mol-%\n"
@@ -319,6 +331,7 @@ SPREADS = [
     ("expanded, k said", "component,mol%,U (k=2)\nCH4,60,1\nCO2,40,\n", "", 0.5),
     ("expanded, k not said", "component,mol%,U\nCH4,60,1\nCO2,40,\n", "", 0.5),
     ("expanded, k of 3", "component,mol%,U (k=3)\nCH4,60,1.5\nCO2,40,\n", "", 0.5),
+    ("expanded, for 95 %", "component,mol%,U95\nCH4,60,1\nCO2,40,\n", "", 0.5),
     ("per cent of the figure", "component,mol%,u %\nCH4,60,1\nCO2,40,\n", "", 0.6),
     ("relative, by its word", "component,mol%,u rel. [%]\nCH4,60,1\nCO2,40,\n", "", 0.6),
     ("a per cent sign in the cell", "component,mol%,u\nCH4,60,1 %\nCO2,40,\n", "", 0.6),
