@@ -265,8 +265,26 @@ def balances(tap):
                  "a note says which flows are open")
 
 
+def analyses(tap):
+    """A gas from a file: the note has the figures of the file, as a list that can be typed."""
+    with Folder() as folder:
+        folder.write("lab.csv", "component;mol% dry;U (k=2)\nCH4;58,31;0,50\nCO2;39,1;\n"
+                                "H2S;850 ppm;\nO2;<0,02;\nN2;rest;\n")
+        ask = "CH4 of lab in mol%\nN2 of lab in mol%\n"
+        wanted = figures(folder, 'gas lab from "lab.csv"\n' + ask)
+        folder.run('gas lab from "lab.csv"\n' + ask + 'note "n.md"\n')
+        cells = markdown_cells(folder.read("n.md"))[0]
+        read = cells[cells.index("lab, as read") + 1] if "lab, as read" in cells else ""
+        tap.tell([] if read == "CH4 58.31 ± 0.50 (k=2), CO2 39.1, H2S 850 ppm, O2 <0.02, N2 rest "
+                 "mol% dry" else cells, "a note has what a file said")
+        got = figures(folder, "gas lab = %s\n%s" % (read, ask))
+        tap.tell([] if wanted == got and len(got) == 2 else [repr(wanted), repr(got)],
+                 "and typed it gives the same figures")
+
+
 def main():
     tap = Tap()
+    analyses(tap)
     balances(tap)
     both_forms(tap)
     inputs(tap)

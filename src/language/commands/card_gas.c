@@ -33,12 +33,10 @@ spread_kind_text (struct arena *arena, const struct spread *spread)
          : spread->kind == SPREAD_LIMITS ? " (limits)" : "";
 }
 
-/* What the user typed for a part: "58.2 +/- 0.3", "850 ppm", "rest", "<5 ppm".  */
-static const char *
-typed_amount (struct session *session, struct arena *arena, const struct node *part)
+const char *
+typed_amount (struct arena *arena, const struct node *part)
 {
   const struct node *a = part->a;
-  (void) session;
   if (part->rest) {
     return "rest";
   }
@@ -90,7 +88,7 @@ stated_as (struct session *session, struct arena *arena, const struct node *list
     if (!own && !is_within (session, part, species)) {
       continue;
     }
-    const char *amount = typed_amount (session, arena, part);
+    const char *amount = typed_amount (arena, part);
     typed = arena_format (arena, "%s%s%s%s%s", typed, *typed ? ", " : "",
                           own ? "" : "in ", own ? "" : part->text,
                           own ? amount : arena_format (arena, " %s", amount));

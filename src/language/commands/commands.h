@@ -31,7 +31,9 @@ struct note_row;
 const struct note_row *note_inputs (const struct session *, struct arena *);
 bool note_ends_in (const char *file, const char *end);
 
-/* The cards of `show` (card_*.c).  */
+/* The cards of `show` (card_*.c).  What was typed, or read, for a part of a list: "58.2 ± 0.3",
+   "850 ppm", "rest", "<5 ppm".                                                                 */
+const char *typed_amount (struct arena *, const struct node *part);
 bool card_of_gas (struct session *, const struct gas_value *, const char *name,
                   struct result *, struct fault *) MUST_CHECK;
 bool card_of_stream (struct session *, const struct stream *, const char *name,

@@ -18,6 +18,7 @@
 #include "result/workings_record.h"
 #include "support/arena.h"
 #include "support/fault.h"
+#include "units/unit.h"
 
 /* ---- Rows ---- */
 
@@ -40,6 +41,20 @@ rows_add (struct rows *rows, const char *name, const char *text, const char *sou
 
 /* ---- Given ---- */
 
+/* "CH4 58.31 ± 0.50 (k=2), H2S 850 ppm, N2 rest mol% dry", of a gas from a file.  */
+static const char *
+read_from_file (struct arena *arena, const struct node *list)
+{
+  const char *text = "";
+  for (const struct node *part = list->items; part; part = part->next) {
+    text = arena_format (arena, "%s%s%s %s", text, *text ? ", " : "", part->text,
+                         typed_amount (arena, part));
+  }
+  return arena_format (arena, "%s%s%s%s", text, list->unit ? " " : "",
+                       list->unit ? list->unit->spelling : "",
+                       list->words & WORD_DRY ? " dry" : "");
+}
+
 static const struct note_row *
 given (const struct session *s, struct arena *arena)
 {
@@ -47,6 +62,10 @@ given (const struct session *s, struct arena *arena)
   for (size_t i = 0; i < s->count; i++) {
     const struct definition *d = s->order[i];
     rows_add (&rows, arena_string (arena, d->name), arena_string (arena, d->source), NULL);
+    if (d->file) {
+      rows_add (&rows, arena_format (arena, "%s, as read", d->name),
+                read_from_file (arena, d->statement->from_file), NULL);
+    }
   }
   return rows.first;
 }
