@@ -343,7 +343,7 @@ note_no_enhancement (struct evaluation *ev, const struct moist_question *q,
   if (a->applied == ENHANCEMENT_BEYOND_T || a->applied == ENHANCEMENT_BEYOND_P) {
     note (ev, MESSAGE_NOTE_ENHANCEMENT_BEYOND, NULL, NULL, NULL);
   } else if (!q->air && q->p > 1e6) {
-    /* In air the factor is 1.03 at 1 MPa and 20 degC (Greenspan 1976).  */
+    /* In air at 0 degC the factor is 1.037 at 1 MPa and 1.075 at 2 MPa (Greenspan 1976).  */
     note (ev, MESSAGE_NOTE_ENHANCEMENT_OTHER, NULL, NULL, NULL);
   }
 }
