@@ -68,6 +68,7 @@ struct settings {
   bool ignore_total;                       /* while a figure is moved by its uncertainty */
   bool bare_is_gauge;                      /* while the gauge reading of bare pressures is tried */
   double vapour_factor;                    /* 1, but while it is tried whether water matters */
+  bool dew_over_liquid;                    /* while dew points below 0 degC are tried so */
   struct trial trial;
   bool is_set[SETTING_COUNT];              /* changed by the user */
   const char *source[SETTING_COUNT];       /* the statement that set it, for `save` */

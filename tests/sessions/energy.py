@@ -102,6 +102,13 @@ SAYS = (
      "enhancement factor 1.0748"),
     ("gas a = air wetted to 50 ppm", "water dew point of a at 50 bar(a)", "notes",
      "beyond the range of the enhancement factor"),
+    # 335.05 Pa over liquid, 309.97 Pa over ice at 265.15 K (D. M. Murphy and T. Koop 2005).
+    ("stream s = 1 kg/h of CH4 at 5 degC, 1 bar(a), dew point -8 degC", "H2O of s in ppm", "taken",
+     "over ice, pure water (over supercooled liquid: +8.1 %)"),
+    ("stream s = 1 kg/h of CH4 at -50 degC, 1 bar(a), dew point -60 degC", "H2O of s in ppm",
+     "taken", "0.00108135 kPa over ice, pure water"),
+    ("stream s = 1 kg/h of CH4 at -5 degC, 1 bar(a), saturated", "H2O of s in ppm", "taken",
+     "kPa over ice, pure water"),
     ("gas a = air saturated at 95 degC, 1 atm", "H2O of a in mol%", "notes",
      "beyond the range of the enhancement factor"),
     ("gas a = air wetted to 0.05 mol%", "water dew point of a at 20 degC, 1 atm", "basis",

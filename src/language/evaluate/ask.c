@@ -97,6 +97,11 @@ other_of (struct arena *arena, const struct assumption *a, struct other *o)
     o->settings.vapour_factor = 1 - WHETHER_IT_MATTERS;
     o->overridden = TOUCH_VAPOUR;
     return true;
+  case ALTERNATIVE_LIQUID:
+    o->settings.dew_over_liquid = true;
+    o->overridden = TOUCH_VAPOUR;
+    o->name = "over supercooled liquid";
+    return true;
   case ALTERNATIVE_GAUGE:
     o->settings.bare_is_gauge = true;
     o->overridden = TOUCH_BARE;

@@ -52,7 +52,7 @@ static inline unsigned touch_family (enum reference_family f) { return 1u << (un
 enum alternative { ALTERNATIVE_NONE, ALTERNATIVE_FAMILY, ALTERNATIVE_SHIPPED, ALTERNATIVE_SITE,
                    ALTERNATIVE_IDEAL, ALTERNATIVE_REAL, ALTERNATIVE_OXYGEN, ALTERNATIVE_BELOW,
                    ALTERNATIVE_GAUGE, ALTERNATIVE_COMBUSTION, ALTERNATIVE_BAROMETER,
-                   ALTERNATIVE_VAPOUR };
+                   ALTERNATIVE_VAPOUR, ALTERNATIVE_LIQUID };
 
 /* Something taken because the user left it open.  */
 struct assumption {

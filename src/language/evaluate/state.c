@@ -348,6 +348,20 @@ note_no_enhancement (struct evaluation *ev, const struct moist_question *q,
   }
 }
 
+/* The vapour pressure over supercooled liquid, which a stated dew point may mean, over that of the
+   ice it is taken for; UNSTATED: it cannot mean that.                                           */
+static double
+liquid_for_ice (const struct evaluation *ev, const struct state *state,
+                const struct moist_answer *answer)
+{
+  struct fault unheard;
+  double psat;
+  fault_init (&unheard, ev->arena);
+  return state->moisture == MOISTURE_DEW_POINT && answer->phase == WATER_ICE
+             && water_pressure_liquid (state->moist, &psat, &unheard)
+           ? psat / answer->psat : UNSTATED;
+}
+
 bool
 state_water (struct evaluation *ev, const struct state *state, const struct moist_place *at,
              double *y)
@@ -377,8 +391,10 @@ state_water (struct evaluation *ev, const struct state *state, const struct mois
     evaluation_assume (ev, &(struct assumption) { .kind = MESSAGE_TAKEN_HUMIDITY });
   }
   evaluation_touch (ev, TOUCH_VAPOUR);
-  *y = answer.value * ev->settings->vapour_factor;
-  assume_vapour_pressure (ev, answer.psat, answer.phase == WATER_ICE);
+  const double liquid = liquid_for_ice (ev, state, &answer);
+  *y = answer.value * ev->settings->vapour_factor
+       * (ev->settings->dew_over_liquid && !isnan (liquid) ? liquid : 1);
+  assume_vapour_pressure (ev, answer.psat, answer.phase == WATER_ICE, !isnan (liquid));
   if (answer.applied == ENHANCEMENT_APPLIED) {
     note (ev, MESSAGE_NOTE_ENHANCEMENT, figure_text (ev->arena, answer.factor), NULL, NULL);
   }

@@ -202,12 +202,13 @@ assume_family (struct evaluation *ev, enum reference_family family)
 }
 
 void
-assume_vapour_pressure (struct evaluation *ev, double psat, bool over_ice)
+assume_vapour_pressure (struct evaluation *ev, double psat, bool over_ice, bool or_liquid)
 {
   if (ev->describe) {
     assume (ev, MESSAGE_TAKEN_VAPOUR_PRESSURE,
             arena_format (ev->arena, "%s kPa", figure_text (ev->arena, psat / 1000)),
-            over_ice ? "ice" : "liquid", ALTERNATIVE_VAPOUR);
+            over_ice ? "ice" : "liquid",
+            or_liquid ? ALTERNATIVE_LIQUID : ALTERNATIVE_VAPOUR);
   }
 }
 

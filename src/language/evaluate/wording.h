@@ -38,7 +38,8 @@ void assume_site_pressure (struct evaluation *);
 void assume_family (struct evaluation *, enum reference_family);
 /* Of a sum that a name stands for.  */
 void assume_counted_as (struct evaluation *, const char *sum, const char *component);
-void assume_vapour_pressure (struct evaluation *, double psat, bool over_ice);
+/* OR_LIQUID: ice was taken, and supercooled liquid may be meant.  */
+void assume_vapour_pressure (struct evaluation *, double psat, bool over_ice, bool or_liquid);
 /* UNCERTAINTY of the density, relative, as published for k = 2; NAN: none is.  */
 void assume_model (struct evaluation *, const char *model, double Z, double uncertainty);
 /* Of a component: known by its formula alone, or from the user's own table.  */
