@@ -283,7 +283,10 @@ trace_wets (struct evaluation *ev, const struct node *figure, const struct gas_v
     const char *typed = figure->figure && figure->unit_text
                           ? arena_format (ev->arena, "%s %s", figure->figure, figure->unit_text)
                           : "the figure";
-    note (ev, MESSAGE_NOTE_TRACE_DRY, typed, share_text (ev->arena, trace->si),
+    const char *wet = share_text (ev->arena, trace->si);
+    note (ev, MESSAGE_NOTE_TRACE_DRY, typed,
+          isnan (trace->oxygen)
+            ? wet : arena_format (ev->arena, "%s, uncorrected for oxygen,", wet),
           share_text (ev->arena, y));
   }
 }
