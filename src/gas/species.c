@@ -182,6 +182,14 @@ species_stated (struct species_table *table, const char *name,
   return made;
 }
 
+/* There is some component one letter away from most words of two, and two away from most of four:
+   how many slips still tell what was meant by a word of N.                                      */
+static size_t
+slips_of (size_t n)
+{
+  return n < 3 ? 0 : (n + 1) / 3;
+}
+
 /* The search for the nearest name: the best so far is less than LIMIT changes away from WORD.  */
 struct search { char word[NAMING_ROOM]; size_t limit; const char *key; };
 
@@ -211,6 +219,8 @@ species_nearest (const struct species_table *table, const char *name, size_t n)
   if (naming_lower (name, n, search.word) == 0)
     return NULL;
   search.limit = text_reach (search.word) + 1;
+  if (search.limit > slips_of (n) + 1)
+    search.limit = slips_of (n) + 1;
   for (size_t i = 0; i < table->size; i++) {
     const struct species *one = &table->rows[i];
 

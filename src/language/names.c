@@ -80,6 +80,9 @@ struct nearest { const char *to, *best; size_t distance; };
 static void
 nearer (struct nearest *n, const char *candidate)
 {
+  if (n->to[0] == '\0' || n->to[1] == '\0') {
+    return;                              /* any letter is one slip away from any other */
+  }
   size_t limit = text_reach (n->to) < n->distance ? text_reach (n->to) : n->distance - 1;
   size_t distance = n->distance ? text_distance (n->to, candidate, limit) : 1;
   if (distance <= limit && distance < n->distance) {
@@ -160,6 +163,9 @@ name_unknown (struct evaluation *ev, const struct node *node)
   }
   const char *spaced = missing_blanks (ev, node->text);
   const char *near = spaced ? spaced : nearest_name (ev->session, node->text);
+  if (!near && node->at.first == 1) {
+    near = statement_like (node->text);
+  }
   return fault_set_at (ev->fault, MESSAGE_NAME_UNKNOWN, node->at, node->text,
                        near ? arena_format (ev->arena, "did you mean '%s'?", near)
                             : "'list' shows your names, 'list components' the rest");

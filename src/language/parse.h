@@ -30,6 +30,8 @@ struct parser *parser_create (struct arena *, const struct vocabulary *, const c
    parser follows blocks that open and close in its own text.                                    */
 bool parser_next (struct parser *, struct statement **, struct fault *) MUST_CHECK;
 enum block parser_block (const struct parser *);
+/* The word that opens a statement and is one slip away from WORD; null: none.  */
+const char *statement_like (const char *word);
 /* Source text of the statement that failed, as typed, for messages (valid after a fault).       */
 const char *parser_source (const struct parser *);
 

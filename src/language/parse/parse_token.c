@@ -156,7 +156,7 @@ statement_opened (const struct parser *p, const struct token *t)
 }
 
 const char *
-statement_near (struct parser *p, const struct token *t)
+statement_like (const char *word)
 {
   static const struct listed_word words[] = {
 #define STATEMENT(name, text, help) { text, sizeof text - 1 },
@@ -164,14 +164,19 @@ statement_near (struct parser *p, const struct token *t)
 #undef STATEMENT
   };
   enum { SHORTEST = 3, LONGEST = 12 };
-  size_t n = t->end - t->start;
-  if (t->kind != TOKEN_WORD || n < SHORTEST || n > LONGEST)
+  const size_t n = strlen (word);
+  if (n < SHORTEST || n > LONGEST)
     return NULL;
-  const char *word = token_text (p, t);
   for (size_t i = 0; i < sizeof words / sizeof words[0]; i++)
     if (text_distance (word, words[i].text, 1) <= 1)
       return words[i].text;
   return NULL;
+}
+
+const char *
+statement_near (struct parser *p, const struct token *t)
+{
+  return t->kind == TOKEN_WORD ? statement_like (token_text (p, t)) : NULL;
 }
 
 unsigned
