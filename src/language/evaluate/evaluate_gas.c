@@ -95,10 +95,11 @@ gas_composition (struct evaluation *ev, const struct gas_value *gas, struct plac
   if (gas->closed) {
     return gas->closed;
   }
-  const char *name = gas->name ? gas->name : "the list";
+  /* What is being defined has no such gas yet: the list stands in its statement.  */
+  const bool named = gas->name && !(ev->subject && strcmp (gas->name, ev->subject) == 0);
+  const char *name = named ? gas->name : "the list", *shown = named ? gas->name : "(...)";
   fault_set_at (ev->fault, MESSAGE_GAS_OPEN, at, name,
                 gas_total_text (ev, gas->analysis, analysis_total (gas->analysis)));
-  const char *shown = gas->name ? gas->name : "(...)";
   if (gas->analysis->count > 0) {
     fault_hint (ev->fault, "%s normalised, %s normalised into %s", shown, shown,
                 gas_usual_balance (gas->analysis));

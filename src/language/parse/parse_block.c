@@ -3,6 +3,12 @@
 
 static const char BOUNDARY[] = "mix NAME: what goes in = what comes out";
 static const char KNOWN[] = "known WHAT = FIGURE";
+static const char RECOVERY[] = "known CH4 of A = 5 mol%; of what there is of it in another stream:"
+                               " known CH4 of A = 98 % of CH4 of B";
+static const char LIST[] = "a list stands in brackets: known composition of NAME = (CH4 60, CO2"
+                           " rest mol%)";
+static const char LIST_OF[] = "a list stands in brackets: known NAME = 850 Nm3/h of (CH4 60, CO2"
+                              " rest mol%)";
 static const char REACTION[] = "react NAME: ... = ... with CH4 + 2 O2 = CO2 + 2 H2O";
 static const char OPENERS[] = "inside a balance a line opens with mix, separate, split, react,"
                               " components, known, absent, per, around or end";
@@ -189,9 +195,12 @@ parse_known (struct parser *p, struct statement *statement)
   if (statement->value->kind == NODE_WITHOUT && at_end (p))
     return true;
   if (!accept (p, TOKEN_EQUALS))
-    return fail_behind_sum (p, KNOWN);
+    return fail_behind_sum (p, at_word (p, "in") ? RECOVERY : KNOWN);
   statement->claim = parse_sum (p);
-  return statement->claim != NULL && (at_end (p) || fail_behind_sum (p, KNOWN));
+  if (statement->claim == NULL || at_end (p))
+    return statement->claim != NULL;
+  const enum node_kind claim = p->token.kind == TOKEN_NUMBER ? statement->claim->kind : NODE_LIST;
+  return fail_behind_sum (p, claim == NODE_NAME ? LIST : claim == NODE_OF ? LIST_OF : KNOWN);
 }
 
 static bool
