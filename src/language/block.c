@@ -240,7 +240,8 @@ close_balance (struct session *session, const struct statement *end, struct resu
                struct fault *fault)
 {
   struct open_block *b = &session->block;
-  struct statement from = { .kind = STATEMENT_BALANCE, .name = b->name, .name_at = b->name_at,
+  struct statement from = { .kind = STATEMENT_BALANCE, .name_at = b->name_at,
+                            .name = arena_string (fault->arena, b->name),
                             .source = b->line[0], .at = b->at[0] };
   const char *source = block_source (b, end, fault->arena);
   undo_group_open (session);
@@ -274,7 +275,8 @@ block_close (struct session *session, const struct statement *end, struct result
       quote_line (b, 0, fault);
     }
   } else {
-    struct statement from = { .kind = STATEMENT_SHEET, .name = b->name, .name_at = b->name_at,
+    struct statement from = { .kind = STATEMENT_SHEET, .name_at = b->name_at,
+                              .name = arena_string (fault->arena, b->name),
                               .source = b->line[0], .at = b->at[0] };
     done = name_define (session, &from, block_source (b, end, fault->arena), NAME_SHEET, result,
                         fault);
