@@ -536,9 +536,11 @@ conflict_find (struct arena *keep, const struct core *core, struct solution *sol
     return false;
   }
   conflict->least = prove (&work);
-  if (!find_suspects (&work, conflict, fault)
-      || (!work.alone && work.surplus > 1
-          && !pairs_find (keep, core, work.set, conflict, fault))) {
+  if (!find_suspects (&work, conflict, fault)) {
+    return false;
+  }
+  conflict->none_alone = !work.alone && work.surplus > 1;
+  if (conflict->none_alone && !pairs_find (keep, core, work.set, conflict, fault)) {
     return false;
   }
   conflict->p = core->p;

@@ -157,6 +157,7 @@ without_nothings (struct arena *arena, const struct network *network,
   }
   *copy = *network;
   copy->possible = possible;
+  copy->denied = NULL;                  /* by facts that are taken or measured, all of them */
   return copy;
 }
 

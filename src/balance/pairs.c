@@ -195,9 +195,9 @@ pairs_find (struct arena *keep, const struct core *core, const bool set[],
   double each = (double) work.rows * (double) work.k * (double) work.k;
   double cost[MOST_TOLD] = { 0 };
   struct suspect_pair *best = ARENA_ARRAY (keep, MOST_TOLD, struct suspect_pair);
+  bool cut = each * (double) facts * (double) conflict->count > most_work;
   prepare (&work);
-  for (size_t f = 0; f < facts && each * (double) facts * (double) conflict->count <= most_work;
-       f++) {
+  for (size_t f = 0; f < facts && !cut; f++) {
     for (size_t g = 0; g < facts && set[f] && all < MOST_SOLVED; g++) {
       struct suspect pair[2];
       bool plausible;
@@ -216,5 +216,6 @@ pairs_find (struct arena *keep, const struct core *core, const bool set[],
   conflict->pairs = best;
   conflict->pair_count = told;
   conflict->pairs_left = all - told;
+  conflict->pairs_cut = cut || all == MOST_SOLVED;
   return true;
 }

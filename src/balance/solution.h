@@ -72,6 +72,7 @@ struct conflict {
   size_t pair_count; const struct suspect_pair *pairs;   /* where no fact alone can be blamed: those
                                     that would change least */
   size_t pairs_left;             /* as good as these, and not among them */
+  bool none_alone, pairs_cut;    /* no fact alone can be blamed; not all pairs were looked at */
   size_t still;                  /* the facts hold only if nothing flows in this stream; `streams`:
                                     not even then */
 };

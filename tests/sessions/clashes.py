@@ -483,6 +483,25 @@ def metered(tap):
     tap.tell(wrong, "%d plants of meters against all sets and pairs, seed %d" % (len(some), SEED))
 
 
+def slips(tap):
+    """Three separators of 100 that part into 50 and 40, which share nothing: with two, 3 x 3 pairs
+    are at fault; with three no pair is, and that is said."""
+    lines = []
+    for n in range(3):
+        names = tuple("case-%d%s" % (n, s) for s in "abc")
+        lines.append(["  separate u%d: %s = %s + %s" % (n, *names)]
+                     + ["  known %s = %d kmol/h" % pair for pair in zip(names, (100, 50, 40))])
+    two = verdicts([solved(*lines[0], *lines[1])])[0]["case"]
+    wrong = "" if len(two["pairs"]) == 5 and two["pairs_left"] == 4 \
+        else "%d pairs and %d" % (len(two["pairs"]), two["pairs_left"])
+    tap.tell(wrong, "two slips that share nothing")
+    three = solved(*lines[0], *lines[1], *lines[2])
+    balance = verdicts([three])[0]["case"]
+    said = [text for label, text in balance["says"] if label == "no line alone"]
+    tap.tell("" if not balance["pairs"] and said and "no pair of lines" in said[0]
+             else "%r %r" % (balance["pairs"], said), "three slips are more than a pair")
+
+
 # ---- What is said not to be there ----
 
 NOTHINGS = [
@@ -537,6 +556,7 @@ def nothings(tap):
 def main():
     tap = session.Tap()
     nothings(tap)
+    slips(tap)
     metered(tap)
     chains(tap)
     parted(tap)

@@ -163,10 +163,16 @@ tell_pairs (struct verdict_maker *m, const struct conflict *conflict)
                   arena_format (m->arena, "%s; %s", pair_side (m, &pair->at[0]),
                                 pair_side (m, &pair->at[1])));
   }
+  if (conflict->none_alone && conflict->pair_count == 0) {
+    verdict_fact (m, "no line alone", conflict->pairs_cut
+                  ? "is at fault for all that clashes; there are too many pairs to look through"
+                  : "is at fault for all that clashes, and no pair of lines either");
+  }
   if (conflict->pair_count > 1) {
     verdict_fact (m, "", conflict->pairs_left > 0
-                  ? arena_format (m->arena, "or %zu pairs more; they tie, the smallest changes "
-                                  "first", conflict->pairs_left)
+                  ? arena_format (m->arena, "or %s%zu pairs more; they tie, the smallest changes "
+                                  "first", conflict->pairs_cut ? "at least " : "",
+                                  conflict->pairs_left)
                   : "these pairs tie, the smallest changes first");
   }
   m->verdict->pairs = pairs;
