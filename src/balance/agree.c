@@ -1,76 +1,58 @@
 /* Do the facts agree within the digits they are typed with?
 
-   Figure f may be moved by y[f], counted in standard deviations of its rounding.  The least moves
-   that make all rows hold are found with a step d of the unknowns, by Newton's steps: in row i of
-   a figure, with s the derivative of what it is short of,
+   Figure f may be moved by y[f], counted in standard deviations of its rounding, which moves its
+   rows by s y[f].  With L' the left null vectors of the rows, moves make all of them hold if L's y
+   is minus L' times what they are short of; the least moves are the shortest such y.  As s goes
+   with the flows, and the rows with the moves, that is done again for what it comes to: Newton's
+   steps.
 
-       minimise |y|^2  subject to  a d - s y[f] = what it is short of, unmoved,  in its rows,
-                                   a d          = what it is short of            in all others
-
-   A figure's first row gives y, any further ones take it from there.  Facts clash when no moves
-   within half a last digit make them hold, or when a move stands out that chance does not make:
-   y[f] over its own standard deviation is that of maximum power for one wrong figure (Mah, Tamhane,
-   AIChE J. 28 (1982) 828).  The sum of squares is no test: of many small and honest moves it may be
-   as large as one likes.                                                                        */
+   Facts clash when no moves within half a last digit make them hold, or when a move stands out that
+   chance does not make: y[f] over its own standard deviation is that of maximum power for one wrong
+   figure (Mah, Tamhane, AIChE J. 28 (1982) 828).  The sum of squares is no test: of many small and
+   honest moves it may be as large as one likes.  Where the least moves in their sum of squares go
+   beyond half a digit, those whose largest is least are looked for, by weights that grow with the
+   moves (Lawson, Contributions to the theory of linear least maximum approximation, 1961); with
+   weights that add up to one the root of the mean square is no more than the largest move of any
+   solution.  What is not decided in the end is so near to half a digit that it holds.           */
 #include "config.h"
 #include "balance/core.h"
 
 #include <gsl/gsl_cdf.h>
 #include <math.h>
 #include <string.h>
-#include "balance/factor.h"
+#include "balance/agree_sparse.h"
 #include "balance/moves.h"
 #include "balance/reduce.h"
 #include "support/arena.h"
 
-/* Facts without a figure wrong are taken for clashing once in ten thousand.  */
-static const double least_p = 1e-4;
+/* A row is independent of others if more than this part of it is orthogonal to them.  */
+static const double dependent = 1e-10;
 /* Facts of exact figures clash when they are out by more than this, relative.  */
 static const double out_of_exact = 1e-9;
 /* Newton's steps are at their end when rows are out by no more than this.  */
-static const double at_end = 1e-14;
-/* A figure that moves its row by less than this part of the largest does not move it.  */
-static const double no_move = 1e-15;
+static const double at_end = 1e-13;
 /* What is left of a figure's variance after the fit, when nothing else bears on it, is rounding. */
 static const double unchecked = 1e-8;
-/* Weights that fall below this part of the largest stay there, so that no figure is forgotten.  */
-static const double least_weight = 1e-6;
-/* Half a last digit in standard deviations, and a little for what Newton's steps leave.  */
-static const double half_digit = 1.7320508075688772 * 1.001;
+/* As small flows as this part of the largest stated are told apart from none at the start.  */
+static const double least_floor = 1e-3;
+/* Facts times the square of how many are to spare, up to which their left null vectors are used. */
+static const double most_left = 2e7;
 
-enum { MOST_STEPS = 30, MOST_WEIGHINGS = 60 };
+enum { MOST_STEPS = 20, MOST_WEIGHINGS = 60 };
+
+struct row_of;
 
 struct work {
-  struct arena *arena, *scratch; /* scratch: of one step */
+  struct arena *arena, *scratch; /* scratch: of the rows at hand */
   struct core *core;
-  size_t facts;
-  size_t *unknown;               /* by column */
-  double *scale;                 /* by unknown */
-  size_t unknowns;
+  const struct agree_task *task;
+  struct system *system;         /* with the figures moved */
   double *v, *y;                 /* by column; by figure */
   double *weight;                /* by figure: of the square of its move */
-  double tolerance;
-  /* The rows at v and y.  */
-  struct linearised equations;
-  double *c, *e;                 /* what exact and measured rows are short of */
-  size_t *of;                    /* by measured row: its figure */
-  double *sum;                   /* by unknown: room for a row, zero between */
-  size_t *touched;
-  struct term *terms;
+  double floor;
+  struct row_of *q;              /* of the last search: orthonormal rows of L'S, by figure */
+  size_t rank;
 };
-
-/* How far row I (of the system) moves when its figure moves by one standard deviation.  */
-static double
-row_move (const struct work *work, size_t i, const double v[])
-{
-  const struct system *system = work->core->system;
-  const struct row *row = &system->rows.row[i];
-  bool flow = system->network->fact[row->of].kind == FACT_FORM;
-  struct form form = move_form (system, row, work->terms);
-  bool still = system->rows.start[i] == system->rows.start[i + 1];
-  return still ? 0 : move_deviation (system->network, row) * system->row_scale[i]
-                     * (flow ? 1 : form_value (&form, v));
-}
 
 /* A figure that alone sets the scale of all flows contradicts nothing: it counts as exact.  */
 static size_t
@@ -89,231 +71,201 @@ scale_figure (const struct system *system)
 }
 
 static double
-largest_right (const struct system *system)
+largest_residual (const struct system *system, const double v[])
 {
-  double largest = 0;
-  for (size_t i = system->structure; i < system->rows.count; i++) {
-    largest = fmax (largest, fabs (system->rows.right[i] * system->row_scale[i]));
-  }
-  return largest;
-}
-
-static double
-largest_residual (const struct core *core)
-{
-  const struct system *system = core->system;
   double most = 0;
   for (size_t i = 0; i < system->rows.count; i++) {
-    double out = rows_residual (&system->rows, i, core->v) * system->row_scale[i];
-    most = fmax (most, fabs (out));
+    most = fmax (most, fabs (rows_residual (&system->rows, i, v) * system->row_scale[i]));
   }
   return most;
 }
 
-static void
-find_sigmas (struct work *work)
+static struct agree_task
+make_task (struct arena *arena, const struct core *core)
 {
-  struct core *core = work->core;
   const struct system *system = core->system;
-  size_t alone = scale_figure (system);
-  double *sigma = ARENA_ARRAY (core->arena, work->facts + 1, double);
-  for (size_t i = 0; i < work->facts; i++) {
-    bool exact = system->structure + i == alone;
-    sigma[i] = exact ? 0 : fabs (row_move (work, system->structure + i, core->v));
+  struct agree_task task = { .facts = system->rows.count - system->structure,
+                             .alone = scale_figure (system) };
+  size_t terms = core->network->components;
+  for (size_t f = 0; f < core->network->facts; f++) {
+    size_t count = core->network->fact[f].right.count;
+    terms = count > terms ? count : terms;
+  }
+  task.terms = ARENA_ARRAY (arena, terms + 1, struct term);
+  for (size_t i = system->structure; i < system->rows.count; i++) {
+    task.flow = fmax (task.flow, fabs (system->rows.right[i]));
+    task.right = fmax (task.right, fabs (system->rows.right[i] * system->row_scale[i]));
+  }
+  task.tolerance = out_of_exact * task.right;
+  return task;
+}
+
+static void
+find_sigmas (struct core *core, const struct agree_task *task)
+{
+  const struct system *system = core->system;
+  double *sigma = ARENA_ARRAY (core->arena, task->facts + 1, double);
+  for (size_t i = 0; i < task->facts; i++) {
+    size_t row = system->structure + i;
+    sigma[i] = row == task->alone ? 0
+               : fabs (move_of_row (system, row, core->v, 0, task->terms));
   }
   core->sigma = sigma;
   core->figure = move_figures (core->arena, system);
 }
 
-/* ---- Rows at a point ---- */
+/* A row of L'S, and where it is not zero: most have few figures.  */
+struct row_of { double *x; size_t count, *at; };
 
-/* The unknowns are the columns that are present.  */
-static void
-number_unknowns (struct work *work)
+static struct row_of
+row_copy (struct arena *arena, size_t facts, const double x[])
 {
-  const struct system *system = work->core->system;
-  work->scale = ARENA_ARRAY (work->arena, system->columns + 1, double);
-  work->unknown = ARENA_ARRAY (work->arena, system->columns + 1, size_t);
-  for (size_t j = 0; j < system->columns; j++) {
-    if (!system->absence.absent[j]) {
-      work->scale[work->unknowns] = system->scale[j];
-      work->unknown[j] = work->unknowns++;
+  struct row_of out = { ARENA_ARRAY (arena, facts + 1, double), 0,
+                        ARENA_ARRAY (arena, facts + 1, size_t) };
+  memcpy (out.x, x, facts * sizeof *out.x);
+  for (size_t i = 0; i < facts; i++) {
+    if (fabs (x[i]) > 0) {
+      out.at[out.count++] = i;
     }
   }
-  work->sum = ARENA_ARRAY (work->arena, work->unknowns + 1, double);
-  work->touched = ARENA_ARRAY (work->arena, 4 * work->unknowns + 1, size_t);
+  return out;
 }
 
+/* Takes what lies along the Q, which are of length 1, out of X; twice, for the digits.  */
 static void
-add_term (struct work *work, size_t *touched, size_t column, double coefficient)
+take_out (size_t count, const struct row_of q[], double x[])
 {
-  size_t k = work->unknown[column];
-  if (!(fabs (work->sum[k]) > 0)) {
-    work->touched[(*touched)++] = k;
-  }
-  work->sum[k] += coefficient;
-}
-
-/* Adds FACTOR times row I, with its figure moved, to the row that is being made; what it is short
-   of, times FACTOR.                                                                             */
-static double
-gather_row (struct work *work, size_t i, double factor, size_t *touched)
-{
-  const struct system *system = work->core->system;
-  const struct rows *rows = &system->rows;
-  const struct row *row = &rows->row[i];
-  double out = -rows_residual (rows, i, work->v), by = 0;
-  factor *= system->row_scale[i];
-  for (size_t e = rows->start[i]; e < rows->start[i + 1]; e++) {
-    add_term (work, touched, rows->column[e], factor * rows->coefficient[e]);
-  }
-  if (i >= system->structure) {
-    by = work->y[work->core->figure[i - system->structure]]
-         * move_deviation (system->network, row);
-  }
-  if (fabs (by) > 0) {
-    struct form form = move_form (system, row, work->terms);
-    bool flow = system->network->fact[row->of].kind == FACT_FORM;
-    out += by * (flow ? 1 : form_value (&form, work->v));
-    for (size_t t = 0; t < form.count; t++) {
-      add_term (work, touched, form.terms[t].column, -factor * by * form.terms[t].coefficient);
+  for (size_t p = 0; p < 2 * count; p++) {
+    const struct row_of *one = &q[p % count];
+    double along = 0;
+    for (size_t e = 0; e < one->count; e++) {
+      along += one->x[one->at[e]] * x[one->at[e]];
+    }
+    for (size_t e = 0; e < one->count && fabs (along) > 0; e++) {
+      x[one->at[e]] -= along * one->x[one->at[e]];
     }
   }
-  return factor * out;
 }
 
-/* Puts the row that is made into TO.  */
-static void
-put_row (struct work *work, struct sparse *to, size_t touched)
+/* The shortest Y with L'S y = rho, for rows of L'S that may depend on each other: one row after
+   the other, each made orthogonal to those before, in Q; how many do not.                       */
+static size_t
+shortest (struct arena *arena, size_t facts, size_t k, const double ls[], const double rho[],
+          double y[], struct row_of q[])
 {
-  sparse_begin (to);
-  for (size_t t = 0; t < touched; t++) {
-    size_t k = work->touched[t];
-    if (fabs (work->sum[k]) > 0) {
-      sparse_add (to, k, work->sum[k]);
+  size_t rank = 0;
+  double *next = ARENA_ARRAY (arena, facts + 1, double);
+  for (size_t c = 0; c < k; c++) {
+    const double *row = &ls[c * facts];
+    double size = 0, left = 0, gap = rho[c];
+    memcpy (next, row, facts * sizeof *next);
+    take_out (rank, q, next);
+    for (size_t i = 0; i < facts; i++) {
+      size += row[i] * row[i];
+      left += next[i] * next[i];
+      gap -= row[i] * y[i];
     }
-    work->sum[k] = 0;
-  }
-}
-
-/* Fact row I: the first that moves with its figure says how far that is, the others follow.  */
-static void
-add_fact_row (struct work *work, size_t i, size_t first[], double least)
-{
-  const struct core *core = work->core;
-  size_t structure = core->system->structure, f = core->figure[i], touched = 0;
-  double s = core->sigma[i] > 0 ? row_move (work, structure + i, work->v) : 0;
-  struct linearised *equations = &work->equations;
-  if (!(fabs (s) > least)) {
-    work->c[equations->exact.count] = gather_row (work, structure + i, 1, &touched);
-    put_row (work, &equations->exact, touched);
-  } else if (first[f] == NOWHERE) {
-    first[f] = i;
-    work->of[equations->measured.count] = f;
-    double weight = sqrt (work->weight[f]);
-    work->e[equations->measured.count] = gather_row (work, structure + i, weight / s, &touched)
-                                         - weight * work->y[f];
-    put_row (work, &equations->measured, touched);
-  } else {
-    double by = row_move (work, structure + first[f], work->v);
-    double out = gather_row (work, structure + i, 1, &touched);
-    out += gather_row (work, structure + first[f], -s / by, &touched);
-    work->c[equations->exact.count] = out;
-    put_row (work, &equations->exact, touched);
-  }
-}
-
-static void
-linearise (struct work *work)
-{
-  const struct system *system = work->core->system;
-  size_t m = system->rows.count, terms = 0;
-  size_t *first = ARENA_ARRAY (work->scratch, work->facts + 1, size_t);
-  double least = no_move * largest_right (system);
-  for (size_t i = 0; i < m; i++) {
-    const struct row *row = &system->rows.row[i];
-    size_t right = i < system->structure ? 0
-                   : move_form (system, row, work->terms).count;
-    terms += 2 * (system->rows.start[i + 1] - system->rows.start[i] + right);
-  }
-  work->equations = (struct linearised) { .unknowns = work->unknowns, .scale = work->scale,
-                                          .exact = sparse_make (work->scratch, m, terms),
-                                          .measured = sparse_make (work->scratch, m, terms) };
-  work->c = ARENA_ARRAY (work->scratch, m + 1, double);
-  work->e = ARENA_ARRAY (work->scratch, m + 1, double);
-  work->of = ARENA_ARRAY (work->scratch, m + 1, size_t);
-  for (size_t i = 0; i < system->structure; i++) {
-    size_t touched = 0;
-    work->c[i] = gather_row (work, i, 1, &touched);
-    put_row (work, &work->equations.exact, touched);
-  }
-  for (size_t i = 0; i < work->facts; i++) {
-    first[i] = NOWHERE;
-  }
-  for (size_t i = 0; i < work->facts; i++) {
-    add_fact_row (work, i, first, least);
-  }
-}
-
-/* ---- Moves ---- */
-
-/* The largest that the exact rows, moved by D, are out.  */
-static double
-exact_left (struct work *work, const double d[])
-{
-  const struct sparse *rows = &work->equations.exact;
-  double *moved = ARENA_ARRAY (work->scratch, rows->count + 1, double), most = 0;
-  sparse_times (rows, d, moved);
-  for (size_t i = 0; i < rows->count; i++) {
-    most = fmax (most, fabs (work->c[i] - moved[i]));
-  }
-  return most;
-}
-
-/* MOVE = the figures' moves, by measured row and weighted, with a step D.  */
-static void
-find_moves (const struct work *work, const double d[], double move[])
-{
-  sparse_times (&work->equations.measured, d, move);
-  for (size_t k = 0; k < work->equations.measured.count; k++) {
-    move[k] -= work->e[k];
-  }
-}
-
-/* How far the rows are out at v and y, of their own terms.  */
-static double
-out_by (struct work *work)
-{
-  double most = 0;
-  for (size_t i = 0; i < work->core->system->rows.count; i++) {
-    size_t touched = 0;
-    most = fmax (most, fabs (gather_row (work, i, 1, &touched)));
-    for (size_t t = 0; t < touched; t++) {
-      work->sum[work->touched[t]] = 0;
+    if (left > dependent * dependent * size) {
+      for (size_t i = 0; i < facts; i++) {
+        y[i] += gap * next[i] / left;
+        next[i] /= sqrt (left);
+      }
+      q[rank++] = row_copy (arena, facts, next);
     }
   }
-  return most;
+  return rank;
 }
 
-/* One of Newton's steps; false: the exact rows leave no room for it.  */
+/* The least moves for the rows at hand, short as they are at V with the moves Y; S, by fact row,
+   gets what these move the rows by.  False: none make all rows hold.                            */
 static bool
-step (struct work *work)
+find_moves (struct work *work, double s[])
+{
+  const struct system *system = work->system;
+  size_t facts = work->task->facts, k = system->surplus;
+  const size_t *figure = work->core->figure;
+  double *ls = ARENA_ARRAY (work->scratch, facts * k + 1, double);
+  double *rho = ARENA_ARRAY (work->scratch, k + 1, double);
+  double *y = ARENA_ARRAY (work->scratch, facts + 1, double);
+  bool met = true;
+  system_clash (system, work->v, rho);
+  for (size_t i = 0; i < facts; i++) {
+    size_t row = system->structure + i;
+    s[i] = row == work->task->alone ? 0
+           : move_of_row (system, row, work->v, work->floor, work->task->terms);
+  }
+  for (size_t c = 0; c < k; c++) {
+    rho[c] = -rho[c];
+  }
+  for (size_t i = 0; i < facts; i++) {
+    double over = 1 / sqrt (work->weight[figure[i]]);
+    for (size_t c = 0; c < k; c++) {
+      double by = system->left[i * k + c] * s[i];
+      rho[c] += by * work->y[figure[i]];
+      ls[c * facts + figure[i]] += by * over;
+    }
+  }
+  work->q = ARENA_ARRAY (work->scratch, k + 1, struct row_of);
+  work->rank = shortest (work->scratch, facts, k, ls, rho, y, work->q);
+  for (size_t c = 0; c < k; c++) {
+    double out = rho[c];
+    for (size_t i = 0; i < facts; i++) {
+      out -= ls[c * facts + i] * y[i];
+    }
+    met = met && fabs (out) <= work->task->tolerance;
+  }
+  for (size_t i = 0; i < facts; i++) {
+    work->y[i] = y[i] / sqrt (work->weight[i]);
+  }
+  return met;
+}
+
+/* Flows to start from: what rows that do not hold leave may be anything, even where the figures
+   hardly differ, and what a digit does to a row goes with its flows.  So at first all digits do as
+   much as they would to large flows, then to smaller ones.                                      */
+static bool
+find_start (struct work *work)
 {
   const struct system *system = work->core->system;
-  const struct factor *factor = factor_make (work->scratch, &work->equations);
-  double *d = ARENA_ARRAY (work->scratch, work->unknowns + 1, double);
-  double *move = ARENA_ARRAY (work->scratch, work->equations.measured.count + 1, double);
-  factor_solve (factor, work->scratch, work->c, work->e, d);
-  if (!(exact_left (work, d) <= work->tolerance)) {
+  double *s = ARENA_ARRAY (work->arena, work->task->facts + 1, double);
+  double *b = ARENA_ARRAY (work->arena, work->task->facts + 1, double);
+  for (work->floor = work->task->flow; work->floor > 0;) {
+    memset (work->y, 0, work->task->facts * sizeof *work->y);
+    if (!find_moves (work, s)) {
+      return false;
+    }
+    for (size_t i = 0; i < work->task->facts; i++) {
+      size_t row = system->structure + i;
+      b[i] = system->rows.right[row] * system->row_scale[row]
+             + s[i] * work->y[work->core->figure[i]];
+    }
+    system_solve (system, b, work->v);
+    work->floor *= work->floor > least_floor * work->task->flow ? 0.01 : 0;
+  }
+  memset (work->y, 0, work->task->facts * sizeof *work->y);
+  return true;
+}
+
+/* Takes the rows, left null vectors and flows that go with the moves.  False: other rows.  */
+static bool
+follow_moves (struct work *work)
+{
+  struct core *core = work->core;
+  const struct system *typed = core->system;
+  const struct network *moved;
+  arena_destroy (work->scratch);
+  work->scratch = arena_create ();
+  moved = network_moved (work->scratch, typed, core->figure, work->y);
+  work->system = system_make (work->scratch, moved, typed->take, typed->split);
+  if (work->system->rows.count != typed->rows.count) {
     return false;
   }
-  find_moves (work, d, move);
-  for (size_t k = 0; k < work->equations.measured.count; k++) {
-    work->y[work->of[k]] = move[k] / sqrt (work->weight[work->of[k]]);
+  system_reduce (work->scratch, work->system, REDUCE_CORE);
+  system_left (work->scratch, work->system);
+  if (typed->null) {
+    system_open (work->scratch, work->system);
   }
-  for (size_t j = 0; j < system->columns; j++) {
-    work->v[j] += system->absence.absent[j] ? 0 : d[work->unknown[j]];
-  }
+  memcpy (work->v, work->system->particular, typed->columns * sizeof *work->v);
   return true;
 }
 
@@ -321,17 +273,15 @@ step (struct work *work)
 static bool
 find_least (struct work *work)
 {
-  double before = HUGE_VAL, most = largest_right (work->core->system);
+  double before = HUGE_VAL;
+  double *s = ARENA_ARRAY (work->arena, work->task->facts + 1, double);
   for (int n = 0; n < MOST_STEPS; n++) {
     double out;
-    arena_destroy (work->scratch);
-    work->scratch = arena_create ();
-    linearise (work);
-    if (!step (work)) {
+    if (!find_moves (work, s) || !follow_moves (work)) {
       return false;
     }
-    out = out_by (work);
-    if (out <= at_end * most || (out <= work->tolerance && out >= before)) {
+    out = largest_residual (work->system, work->v);
+    if (out <= at_end * work->task->right || (out <= work->task->tolerance && out >= before)) {
       return true;
     }
     before = out;
@@ -339,99 +289,131 @@ find_least (struct work *work)
   return false;
 }
 
-/* Moves that stay within half a last digit, if there are any.  Where those with the least sum of
-   squares do not, those whose largest is least are looked for, by weights that grow with the moves
-   (Lawson, Contributions to the theory of linear least maximum approximation, 1961).  With weights
-   that add up to one the root of the mean square is no more than the largest move of any solution.
-   What is not decided in the end is so near to half a digit that it holds.                      */
+/* The probability of as large a move as the one that stands out most.  */
+static double
+chance (const struct work *work)
+{
+  size_t facts = work->task->facts;
+  double most = 0;
+  for (size_t f = 0; f < facts; f++) {
+    double part = 0;
+    for (size_t c = 0; c < work->rank; c++) {
+      part += work->q[c].x[f] * work->q[c].x[f];
+    }
+    if (part > unchecked) {
+      most = fmax (most, fabs (work->y[f]) / sqrt (part));
+    }
+  }
+  return -expm1 ((double) work->rank * log1p (-2 * gsl_cdf_ugaussian_Q (most)));
+}
+
+/* Whatever moves make the rows hold, what they have in common with row P of the orthogonal
+   projection on those of L'S is the least move y of its figure.  So where that is more than half a
+   digit times the sum of what is in P, some move is more than half a digit.                     */
+static bool
+is_beyond_half (const struct work *work)
+{
+  size_t facts = work->task->facts;
+  double *p = ARENA_ARRAY (work->scratch, facts + 1, double);
+  for (size_t f = 0; f < facts; f++) {
+    double sum = 0;
+    if (fabs (work->y[f]) <= MOVE_HALF) {
+      continue;
+    }
+    memset (p, 0, facts * sizeof *p);
+    for (size_t c = 0; c < work->rank; c++) {
+      const struct row_of *q = &work->q[c];
+      for (size_t e = 0; e < q->count && fabs (q->x[f]) > 0; e++) {
+        p[q->at[e]] += q->x[f] * q->x[q->at[e]];
+      }
+    }
+    for (size_t i = 0; i < facts; i++) {
+      sum += fabs (p[i]);
+    }
+    if (fabs (work->y[f]) > MOVE_HALF * sum) {
+      return true;
+    }
+  }
+  return false;
+}
+
+/* Where a search does not end, the least moves in their sum of squares stay: they hold, and nothing
+   says that there are none within half a digit.                                                 */
 static bool
 find_within_half (struct work *work)
 {
+  size_t columns = work->core->system->columns, facts = work->task->facts, count = 0;
+  size_t *figure = ARENA_ARRAY (work->arena, facts + 1, size_t);
+  double *v = ARENA_ARRAY (work->arena, columns + 1, double);
+  double *y = ARENA_ARRAY (work->arena, facts + 1, double);
+  bool within = true;
+  memcpy (v, work->v, columns * sizeof *v);
+  memcpy (y, work->y, facts * sizeof *y);
+  for (size_t i = 0; i < facts; i++) {
+    if (work->core->figure[i] == i) {
+      figure[count++] = i;
+    }
+  }
   for (int n = 0; n < MOST_WEIGHINGS; n++) {
-    double most = 0, squares = 0, sum = 0;
-    for (size_t k = 0; k < work->equations.measured.count; k++) {
-      size_t f = work->of[k];
-      most = fmax (most, fabs (work->y[f]));
-      squares += work->weight[f] * work->y[f] * work->y[f];
-      sum += work->weight[f];
-    }
-    if (most <= half_digit || sqrt (squares / sum) > half_digit) {
-      return most <= half_digit;
-    }
-    for (size_t k = 0; k < work->equations.measured.count; k++) {
-      double *weight = &work->weight[work->of[k]];
-      *weight = fmax (*weight * fabs (work->y[work->of[k]]) / most, least_weight);
+    if (move_weigh (count, figure, work->y, work->weight, &within)) {
+      return within;
     }
     if (!find_least (work)) {
-      return false;
+      memcpy (work->v, v, columns * sizeof *v);
+      memcpy (work->y, y, facts * sizeof *y);
+      return true;
     }
   }
   return true;
 }
 
-/* The probability of as large a move as the one that stands out most.  */
-static double
-chance (struct work *work)
-{
-  const struct factor *factor = factor_make (work->scratch, &work->equations);
-  size_t count = work->equations.measured.count, rank = factor_rank (factor);
-  double *left = ARENA_ARRAY (work->scratch, count + 1, double), most = 0;
-  factor_leverages (factor, work->scratch, left);
-  for (size_t k = 0; k < count; k++) {
-    if (1 - left[k] > unchecked) {
-      most = fmax (most, fabs (work->y[work->of[k]]) / sqrt (1 - left[k]));
-    }
-  }
-  return count > rank ? -expm1 ((double) (count - rank) * log1p (-2 * gsl_cdf_ugaussian_Q (most)))
-                      : 1;
-}
-
 static void
-judge (struct work *work)
+judge (struct core *core, const struct agree_task *task)
 {
-  struct core *core = work->core;
-  size_t columns = core->system->columns;
-  work->v = ARENA_ARRAY (core->arena, columns + 1, double);
-  work->y = ARENA_ARRAY (core->arena, work->facts + 1, double);
-  work->weight = ARENA_ARRAY (work->arena, work->facts + 1, double);
-  memcpy (work->v, core->v, columns * sizeof *work->v);
-  for (size_t i = 0; i < work->facts; i++) {
-    work->weight[i] = 1;
+  struct work work = { .arena = arena_create (), .scratch = arena_create (), .core = core,
+                       .task = task, .system = core->system };
+  work.v = ARENA_ARRAY (core->arena, core->system->columns + 1, double);
+  work.y = ARENA_ARRAY (core->arena, task->facts + 1, double);
+  work.weight = ARENA_ARRAY (work.arena, task->facts + 1, double);
+  memcpy (work.v, core->v, core->system->columns * sizeof *work.v);
+  for (size_t i = 0; i < task->facts; i++) {
+    work.weight[i] = 1;
   }
-  core->agree = find_least (work);
+  system_left (core->arena, core->system);
   core->p = 0;
+  core->agree = find_start (&work) && find_least (&work);
   if (core->agree) {
-    linearise (work);                    /* where they ended */
-    core->p = chance (work);
-    core->agree = core->p >= least_p && find_within_half (work);
+    double *s = ARENA_ARRAY (work.arena, task->facts + 1, double);
+    core->agree = find_moves (&work, s);         /* at what they come to */
+    core->p = chance (&work);
+    core->agree = core->agree && core->p >= MOVE_CHANCE && !is_beyond_half (&work)
+                  && find_within_half (&work);
   }
   if (core->agree) {
-    core->v = work->v;
-    core->moves = work->y;
+    core->v = work.v;
+    core->moves = work.y;
   }
+  arena_destroy (work.scratch);
+  arena_destroy (work.arena);
 }
 
 void
 core_agree (struct core *core)
 {
   const struct system *system = core->system;
-  const struct network *network = core->network;
-  size_t terms = network->components;
-  struct work work = { .arena = arena_create (), .scratch = arena_create (), .core = core,
-                       .facts = system->rows.count - system->structure };
-  for (size_t f = 0; f < network->facts; f++) {
-    terms = network->fact[f].right.count > terms ? network->fact[f].right.count : terms;
-  }
-  work.terms = ARENA_ARRAY (work.arena, terms + 1, struct term);
-  work.tolerance = out_of_exact * largest_right (system);
-  find_sigmas (&work);
+  struct arena *arena = arena_create ();
+  struct agree_task task = make_task (arena, core);
+  double spare = (double) system->surplus;
+  find_sigmas (core, &task);
   core->agree = true;
   core->p = 1;
   core->moves = NULL;
-  if (largest_residual (core) > work.tolerance) {
-    number_unknowns (&work);
-    judge (&work);
+  if (largest_residual (system, core->v) > task.tolerance) {
+    if ((double) task.facts * spare * spare <= most_left) {
+      judge (core, &task);
+    } else {
+      agree_sparsely (core, &task);
+    }
   }
-  arena_destroy (work.scratch);
-  arena_destroy (work.arena);
+  arena_destroy (arena);
 }

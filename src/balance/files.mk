@@ -4,6 +4,8 @@ noinst_LIBRARIES += %D%/libbalance.a
   %D%/absent.c \
   %D%/absent.h \
   %D%/agree.c \
+  %D%/agree_sparse.c \
+  %D%/agree_sparse.h \
   %D%/bend.c \
   %D%/bounded.c \
   %D%/bounded.h \

@@ -56,6 +56,53 @@ move_form (const struct system *system, const struct row *row, struct term terms
   return (struct form) { count, terms };
 }
 
+double
+move_scaled (const struct system *system, size_t i)
+{
+  bool still = system->rows.start[i] == system->rows.start[i + 1];
+  return still ? 0 : move_deviation (system->network, &system->rows.row[i])
+                     * system->row_scale[i];
+}
+
+double
+move_of_row (const struct system *system, size_t i, const double v[], double floor,
+             struct term terms[])
+{
+  const struct row *row = &system->rows.row[i];
+  bool flow = system->network->fact[row->of].kind == FACT_FORM;
+  struct form form = move_form (system, row, terms);
+  double by = flow ? 1 : form_value (&form, v), most = 0;
+  if (system->network->fact[row->of].kind == FACT_SHARE && row->component != NOWHERE) {
+    /* One figure: its rows keep to each other as the components do.  */
+    double total = fabs (system_total (system, v, system->network->fact[row->of].of));
+    return move_scaled (system, i) * by * (total > 0 && total < floor ? floor / total : 1);
+  }
+  for (size_t t = 0; t < form.count; t++) {
+    most = fmax (most, floor * fabs (form.terms[t].coefficient));
+  }
+  return move_scaled (system, i) * (fabs (by) < most ? copysign (most, by) : by);
+}
+
+bool
+move_weigh (size_t count, const size_t of[], const double y[], double weight[], bool *within)
+{
+  static const double least = 1e-6;      /* so that no figure is forgotten */
+  double most = 0, squares = 0, sum = 0;
+  for (size_t k = 0; k < count; k++) {
+    most = fmax (most, fabs (y[of[k]]));
+    squares += weight[of[k]] * y[of[k]] * y[of[k]];
+    sum += weight[of[k]];
+  }
+  *within = most <= MOVE_HALF;
+  if (*within || sqrt (squares / sum) > MOVE_HALF) {
+    return true;
+  }
+  for (size_t k = 0; k < count; k++) {
+    weight[of[k]] = fmax (weight[of[k]] * fabs (y[of[k]]) / most, least);
+  }
+  return false;
+}
+
 size_t *
 move_figures (struct arena *arena, const struct system *system)
 {

@@ -172,8 +172,17 @@ struct making {
   struct bend *bend;
   size_t *inlet;                 /* by stream: the inlet of the split it leaves, or NOWHERE */
   size_t *share;                 /* by stream: the first fact taken that is its share, or NOWHERE */
+  size_t *beside;                /* by stream: the same of another outlet of its split */
   bool *spread;                  /* by fact: a share that stands for a split's equal composition */
 };
+
+/* Is the fact the ratio of two outlets of one split?  */
+static bool
+is_beside (const struct making *making, const struct fact *fact)
+{
+  return fact->kind == FACT_SHARE && making->inlet[fact->stream] != NOWHERE
+         && making->inlet[fact->stream] == making->inlet[fact->of];
+}
 
 static void
 index_splits (struct making *making, const bool take[])
@@ -181,9 +190,10 @@ index_splits (struct making *making, const bool take[])
   const struct network *network = making->system->network;
   making->inlet = ARENA_ARRAY (making->arena, network->streams + 1, size_t);
   making->share = ARENA_ARRAY (making->arena, network->streams + 1, size_t);
+  making->beside = ARENA_ARRAY (making->arena, network->streams + 1, size_t);
   making->spread = ARENA_ARRAY (making->arena, network->facts + 1, bool);
   for (size_t s = 0; s < network->streams; s++) {
-    making->inlet[s] = making->share[s] = NOWHERE;
+    making->inlet[s] = making->share[s] = making->beside[s] = NOWHERE;
   }
   for (size_t b = 0; b < network->boundaries; b++) {
     const struct boundary *boundary = &network->boundary[b];
@@ -195,6 +205,8 @@ index_splits (struct making *making, const bool take[])
     const struct fact *fact = &network->fact[f];
     if (take[f] && fact->kind == FACT_SHARE && making->inlet[fact->stream] == fact->of) {
       making->share[fact->stream] = f;
+    } else if (take[f] && is_beside (making, fact)) {
+      making->beside[fact->stream] = f;
     }
   }
 }
@@ -206,10 +218,16 @@ outlet_rows (struct making *making, size_t boundary, size_t o)
   const struct network *network = making->system->network;
   const struct boundary *b = &network->boundary[boundary];
   const struct split *split = making->system->split ? &making->system->split[boundary] : NULL;
-  size_t f = making->share[b->outlets[o]];
+  size_t f = making->share[b->outlets[o]], beside = making->beside[b->outlets[o]];
   if (f != NOWHERE) {
     making->spread[f] = true;
     return true;
+  }
+  if (beside != NOWHERE) {
+    /* Not if the other one leans on a third, or on this.  */
+    size_t other = making->beside[network->fact[beside].of];
+    making->spread[beside] = other == NOWHERE || !making->spread[other];
+    return making->spread[beside];
   }
   if (split && split->share && !isnan (split->share[o])) {
     share_rows (&making->builder, network, (size_t[2]) { b->outlets[o], b->inlets[0] },
@@ -327,7 +345,8 @@ fact_rows (struct making *making, size_t f)
     composition_rows (builder, network, fact->stream, fact->fractions, row);
     break;
   case FACT_SHARE:
-    if (making->spread[f] || making->inlet[fact->stream] != fact->of) {
+    if (making->spread[f]
+        || (making->inlet[fact->stream] != fact->of && !is_beside (making, fact))) {
       share_rows (builder, network, (size_t[2]) { fact->stream, fact->of }, fact->value, row);
     } else {
       builder_stream (builder, network, fact->stream, 1);

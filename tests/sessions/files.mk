@@ -32,6 +32,7 @@ session_tests = \
   %D%/rows.sh \
   %D%/scenarios.sh \
   %D%/sheets.sh \
+  %D%/stated.sh \
   %D%/treatments.sh \
   %D%/trims.sh \
   %D%/uncertainty.sh \

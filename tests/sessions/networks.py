@@ -1,10 +1,10 @@
 """Networks made at random, solved through the language: the truth behind them comes back.
 
 A network is simulated first: feeds of known composition, units with known recoveries and shares,
-recycles iterated until they close.  What a plant would know of it is then typed as a balance, in six
-ways: just enough, too little, too much but consistent, too much with one figure wrong, measured with
-noise, measured with noise and one gross error.  The figures to come back are those of the
-simulation, which shares nothing with the program.
+recycles iterated until they close.  What a plant would know of it is then typed as a balance, in four
+ways: just enough, too little, measured with noise, measured with noise and one gross error.  The
+figures to come back are those of the simulation, which shares nothing with the program.  What is
+known too often, right and wrong, is in stated.py.
 """
 import math
 import random
@@ -19,9 +19,8 @@ HOUR = 3600.0
 COMPONENTS = ("CH4", "CO2", "N2", "H2", "CO", "O2", "C2H6", "Ar")
 BATCH = 20
 RANKED = 60                        # component flows up to which ranks are worked out here too
-WAYS = ("determined", "short", "redundant", "wrong", "noisy", "gross")
-COUNT = {"determined": 400, "short": 400, "redundant": 500, "wrong": 400, "noisy": 300,
-         "gross": 200}
+WAYS = ("determined", "short", "noisy", "gross")
+COUNT = {"determined": 400, "short": 400, "noisy": 300, "gross": 200}
 
 
 class Network:
@@ -172,21 +171,6 @@ class Facts:
                                  100 * parameters[place][c],
                                  "%% of %s of %s" % (component, source))
 
-    def extra(self, chance):
-        """One more true fact; its line."""
-        net = self.net
-        made = [s for s in net.used if s not in net.feeds]
-        s = chance.choice(made)
-        c = chance.randrange(len(net.components))
-        kind = chance.choice(("total", "part", "share"))
-        if kind == "total" or (kind == "share" and len(net.components) == 1):
-            return self.add(self.stream(s), net.total(s), "kmol/h")
-        if kind == "part":
-            return self.add("%s of %s" % (net.components[c], self.stream(s)), net.flows[s][c],
-                            "kmol/h")
-        return self.add("%s of %s" % (net.components[c], self.stream(s)),
-                        100 * net.flows[s][c] / net.total(s), "mol%")
-
     def text(self, wrong=None, factor=1.0):
         """The balance; the figure of line WRONG is multiplied by FACTOR."""
         net = self.net
@@ -215,8 +199,7 @@ class Study:
         self.reconciled = self.alarms = self.freedom = 0
         self.chi2 = 0.0
         self.off = []
-        self.rate = {"not found": 0, "no minimum": 0, "gross missed": 0, "gross unnamed": 0,
-                     "false clashes": 0, "unseen slips": 0}
+        self.rate = {"not found": 0, "no minimum": 0, "gross missed": 0, "gross unnamed": 0}
 
     def fail(self, way, name, what):
         """One thing that is not so."""
@@ -306,27 +289,6 @@ def short(chance, name):
     lines = [i for i, line in enumerate(facts.lines) if line[1] is not None]
     taken = facts.lines.pop(chance.choice(lines))
     return facts, facts.text(), taken
-
-
-def redundant(chance, name):
-    """A few figures more, all of four digits."""
-    facts = Facts(make(chance, size(chance)), name, 4)
-    facts.canonical()
-    extra = {facts.extra(chance) for _ in range(chance.randint(1, 3))}
-    return facts, facts.text(), extra
-
-
-def wrong(chance, name):
-    """One of them wrong by 6 to 30 %."""
-    facts = Facts(make(chance, size(chance)), name, 4)
-    facts.canonical()
-    extra = [facts.extra(chance) for _ in range(chance.randint(1, 3))]
-    bad = chance.choice(extra)
-    # Of shares near one hundred per cent the slip goes down, so that a share stays one.
-    factor = 1 - chance.uniform(0.06, 0.3)
-    if facts.lines[bad][1] * 1.3 < 90 and chance.random() < 0.5:
-        factor = 1 + chance.uniform(0.06, 0.3)
-    return facts, facts.text(bad, factor), bad
 
 
 def noisy(chance, name):
@@ -425,29 +387,6 @@ def follow(study, way, chance):
                     study.fail(way, facts.name, one)
 
 
-def look_redundant(study, way, facts, balance, extra):
-    """More than enough, and no clash."""
-    if balance["status"] == "contradictory":
-        study.rate["false clashes"] += 1
-    elif balance["status"] != "redundant" or balance["surplus"] != len(extra):
-        study.fail(way, facts.name, "status %(status)s, %(surplus)d to spare" % balance)
-    else:
-        for line in far(facts, balance, 0.05)[:2]:
-            study.fail(way, facts.name, line)
-        for one in balance["practically_undetermined"][:2]:
-            study.fail(way, facts.name, "%(what)s is said to hang on last digits" % one)
-
-
-def look_wrong(study, way, facts, balance, bad):
-    """A clash, and the wrong figure is among the lines named."""
-    if balance["status"] != "contradictory":
-        study.rate["unseen slips"] += 1
-        return
-    form = facts.lines[bad][0].split(" = ")[0]
-    if not any(line.startswith(form + " = ") for line in balance["conflict"]):
-        study.fail(way, facts.name, "%s is not in %r" % (form, balance["conflict"]))
-
-
 def look_noisy(study, way, case, balance, _):
     """Found, of one piece, no further off than the truth, and counted as the rank has it."""
     said = " ".join(balance["notes"] + balance["taken"])
@@ -486,10 +425,9 @@ def look_gross(study, way, case, balance, bad):
         study.rate["gross unnamed"] += bad[0].text(bad[1]) not in named
 
 
-LOOK = {"determined": look_determined, "short": look_short, "redundant": look_redundant,
-        "wrong": look_wrong, "noisy": look_noisy, "gross": look_gross}
-MAKE = {"determined": determined, "short": short, "redundant": redundant, "wrong": wrong,
-        "noisy": noisy, "gross": gross}
+LOOK = {"determined": look_determined, "short": look_short, "noisy": look_noisy,
+        "gross": look_gross}
+MAKE = {"determined": determined, "short": short, "noisy": noisy, "gross": gross}
 
 
 def run(study, way):
@@ -532,12 +470,10 @@ def main():
     for way in ways:
         run(study, way)
         tap.tell(study.wrong[way], "%d networks, %s, seed %d" % (study.counts[way], way, SEED))
-    # A slip hides where four digits of the other figures leave room for it.
     # Measured with this seed: of noisy networks two are not found and one settles where it does not
     # fit best, all of them metered poorly or hardly; of gross errors 8 % are not the figure that
     # stands out most, as bent figures so far off shift the others too.
-    bounds = {"false clashes": ("redundant", 0.001), "unseen slips": ("wrong", 0.01),
-              "not found": ("noisy", 0.01), "no minimum": ("noisy", 0.01),
+    bounds = {"not found": ("noisy", 0.01), "no minimum": ("noisy", 0.01),
               "gross missed": ("gross", 0.05), "gross unnamed": ("gross", 0.1)}
     for rate, (way, bound) in bounds.items():
         if way in ways:

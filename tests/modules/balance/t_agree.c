@@ -183,12 +183,37 @@ sum_of_many (void)
   }
 }
 
+/* Two outlets in a ratio are one figure, and tell a split of two as a share does.  With a share as
+   well one is to spare, however many components there are.                                      */
+static void
+outlets_in_a_ratio (void)
+{
+  static const double x[] = { 0.5, 0.3, 0.2 };
+  for (int both = 0; both < 2; both++) {
+    struct plant *plant = plant_make ("FAB", 3);
+    const struct solution *solution;
+    plant_boundary (plant, BOUNDARY_SPLIT, "F", "AB");
+    plant_total (plant, 'F', 100);
+    plant_composition (plant, 'F', x);
+    plant_share (plant, 'A', 'B', 0.25);
+    if (both) {
+      plant_share (plant, 'B', 'F', 0.8);
+    }
+    solution = solve (plant);
+    SAME_INT (solution->status, both ? BALANCE_REDUNDANT : BALANCE_DETERMINED);
+    SAME_INT (solution->count.surplus, both);
+    NEAR (solution->value[plant_column (plant, 'A', 1)], 6, 1e-12);
+    plant_free (plant);
+  }
+}
+
 static const struct test_case cases[] = {
   { "two shares agree within their digits", shares_agree },
   { "they may go as far as half a last digit", shares_at_the_limit },
   { "and no further", shares_beyond_the_limit },
   { "many splits agree that agree each by itself", many_agree },
   { "one of many clashes by itself", one_of_many_clashes },
+  { "outlets in a ratio are one figure", outlets_in_a_ratio },
   { "a sum may be off as far as chance goes", sum_of_many },
   { NULL, NULL }
 };
