@@ -13,7 +13,7 @@ enum { MOST_TOLD = 5 };
 
 /* Multiplications spent on looking for pairs, and pairs that are solved without.  */
 static const double most_work = 5e8;
-enum { MOST_SOLVED = 60 };
+enum { MOST_SOLVED = 150 };
 /* As in agree.c: facts without a figure wrong are taken for clashing once in ten thousand, exact
    ones when they are out by more than this part.                                                */
 static const double least_p = 1e-4, out_of_exact = 1e-9;
@@ -26,6 +26,7 @@ struct work {
   double *rho, *spread;          /* left null vectors times right sides; [c * rows + figure]: times
                                     sigma */
   double floor;
+  size_t solved;                 /* pairs without which all was solved */
 };
 
 static void
@@ -176,6 +177,7 @@ try_pair (struct work *work, const size_t fact[2], struct suspect pair[2], bool 
     pair[side] = (struct suspect) { .fact = fact[side],
                                     .component = odd_component (work, fact[side]) };
   }
+  work->solved++;
   if (!suspects_need (work->core, pair, 2, fault)) {
     return false;
   }
@@ -198,7 +200,7 @@ pairs_find (struct arena *keep, const struct core *core, const bool set[],
   bool cut = each * (double) facts * (double) conflict->count > most_work;
   prepare (&work);
   for (size_t f = 0; f < facts && !cut; f++) {
-    for (size_t g = 0; g < facts && set[f] && all < MOST_SOLVED; g++) {
+    for (size_t g = 0; g < facts && set[f] && work.solved < MOST_SOLVED; g++) {
       struct suspect pair[2];
       bool plausible;
       if (g == f || (set[g] && g < f) || !is_checked (&work, g)) {
@@ -216,6 +218,6 @@ pairs_find (struct arena *keep, const struct core *core, const bool set[],
   conflict->pairs = best;
   conflict->pair_count = told;
   conflict->pairs_left = all - told;
-  conflict->pairs_cut = cut || all == MOST_SOLVED;
+  conflict->pairs_cut = cut || work.solved == MOST_SOLVED;
   return true;
 }
