@@ -351,6 +351,7 @@ plant_verdict (struct evaluation *ev, const struct plant *plant, const struct ta
   tell_components (&m);
   redundant_facts (&m);
   close_balance (&m);
+  verdict_extents (&m);
   negative_flows (&m);
   verdict_moved (&m);
   verdict_round (&m);

@@ -41,6 +41,8 @@ const char *fact_value_text (const struct verdict_maker *, size_t fact, double v
 
 /* verdict_streams.c: the solution, stream by stream.  */
 bool verdict_streams (struct verdict_maker *, const struct target *) MUST_CHECK;
+/* How far each reaction goes, where that is fixed.  */
+void verdict_extents (struct verdict_maker *);
 /* verdict_flows.c: their flows in the units of the targets, or in the usual ones (null).  */
 bool verdict_flows (struct verdict_maker *, const struct target *,
                     struct verdict_stream streams[]) MUST_CHECK;

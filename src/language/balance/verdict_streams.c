@@ -168,3 +168,54 @@ verdict_streams (struct verdict_maker *m, const struct target *targets)
   }
   return true;
 }
+
+/* ---- Reactions ---- */
+
+static bool
+hangs_on_digits (const struct verdict_maker *m, size_t boundary, size_t reaction)
+{
+  const struct loose *loose = m->solution->loose;
+  for (size_t i = 0; loose && i < loose->count; i++) {
+    const struct quantity *q = &loose->ends[i].quantity;
+    if (q->kind == QUANTITY_EXTENT && q->stream == boundary && q->component == reaction) {
+      return true;
+    }
+  }
+  return false;
+}
+
+/* "78 kmol/h"; null: it is open, or as good as that.  */
+static const char *
+extent_text (const struct verdict_maker *m, size_t boundary, size_t reaction)
+{
+  const size_t column = network_extent (&m->plant->network, boundary) + reaction;
+  const double per = 3.6;                /* mol/s in kmol/h: an extent has no other unit */
+  if (!m->solution->fixed[column] || hangs_on_digits (m, boundary, reaction)) {
+    return NULL;
+  }
+  struct term term = { column, 1 };
+  struct form form = { .terms = &term, .count = 1 };
+  const double u = per * solution_uncertainty (m->solution, &m->plant->network, &form, NULL);
+  const char *value = figure_text (m->arena, per * m->solution->value[column]);
+  return u > 0 ? arena_format (m->arena, "%s +/- %.2g kmol/h", value, u)
+         : arena_format (m->arena, "%s kmol/h", value);
+}
+
+void
+verdict_extents (struct verdict_maker *m)
+{
+  const struct plant *plant = m->plant;
+  struct text_list list = { .at = NULL };
+  for (size_t b = 0; b < plant->boundary_count && m->solution->status != BALANCE_CONTRADICTORY;
+       b++) {
+    const size_t count = plant->network.boundary[b].reaction_count;
+    for (size_t k = 0; k < count; k++) {
+      const char *text = extent_text (m, b, k), *name = plant->boundary[b].name;
+      if (text) {
+        text_list_add (m->arena, &list, count == 1 ? arena_format (m->arena, "%s: %s", name, text)
+                       : arena_format (m->arena, "reaction %zu of %s: %s", k + 1, name, text));
+      }
+    }
+  }
+  verdict_facts (m, "extent of", &list);
+}
