@@ -112,12 +112,13 @@ with_flow (const struct core *core, size_t stream)
   return out;
 }
 
+/* The facts of CORE, and those behind them.  */
 static bool *
-all_facts (struct arena *arena, const struct network *network)
+facts_taken (const struct core *core, const struct network *network)
 {
-  bool *take = ARENA_ARRAY (arena, network->facts + 1, bool);
+  bool *take = ARENA_ARRAY (core->arena, network->facts + 1, bool);
   for (size_t f = 0; f < network->facts; f++) {
-    take[f] = true;
+    take[f] = f >= core->network->facts || core->system->take[f];
   }
   return take;
 }
@@ -164,7 +165,7 @@ try_flow (struct arena *keep, struct idle *idle, size_t stream, struct fault *fa
 {
   const struct core *core = idle->core, *flowing;
   const struct network *network = with_flow (core, stream);
-  bool *take = all_facts (core->arena, network);
+  bool *take = facts_taken (core, network);
   struct solution solution = { .status = BALANCE_CONTRADICTORY };
   struct fault own;
   fault_init (&own, core->arena);

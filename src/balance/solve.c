@@ -17,6 +17,8 @@
 #include "support/arena.h"
 #include "support/fault.h"
 
+/* A stream of less than this part of the largest flow has none.  */
+static const double idle_below = 1e-9;
 /* A fact whose row in the left null space is less than this is checked by nothing.  */
 static const double unchecked = 1e-8;
 
@@ -271,6 +273,48 @@ take_over (struct solution *solution, const struct solution *reconciled)
   solution->covariance = reconciled->covariance;
 }
 
+/* Where reconciliation comes to nothing the exact facts may be why: with their splits solved they
+   clash, or some flow of theirs is below zero.  Null: they say nothing of the kind, or interrupted
+   with OWN filled in.  */
+static struct solution *
+solve_without_measured (struct arena *keep, const struct core *exact, struct fault *own)
+{
+  struct fault unheard;
+  fault_init (&unheard, exact->arena);
+  const struct core *core = core_make (exact->arena, exact->network, exact->system->take,
+                                       exact->options, &unheard);
+  struct solution *solution = core ? solve_exact (keep, core, &unheard) : NULL;
+  if (unheard.kind == MESSAGE_INTERRUPTED) {
+    *own = unheard;
+    return NULL;
+  }
+  bool why = solution && (solution->status == BALANCE_CONTRADICTORY
+                          || solution->negative_count > 0);
+  return why ? solution : NULL;
+}
+
+/* Did reconciliation leave next to nothing of a stream that is not held at zero?  */
+static bool
+has_idle (const struct core *core, const struct solution *reconciled)
+{
+  const struct network *network = core->network;
+  size_t parts = network->components;
+  double largest = 0;
+  bool idle = false, *held = ARENA_ARRAY (core->arena, network->streams + 1, bool);
+  for (size_t i = 0; i < reconciled->held_count; i++) {
+    held[reconciled->held[i] / parts] = true;
+  }
+  for (size_t j = 0; j < network->streams * parts; j++) {
+    largest = fmax (largest, fabs (reconciled->value[j]));
+  }
+  for (size_t s = 0; s < network->streams; s++) {
+    double total = system_total (core->system, reconciled->value, s);
+    idle = idle || (system_parts (core->system, s) > 0 && !held[s]
+                    && fabs (total) < idle_below * largest);
+  }
+  return idle;
+}
+
 /* Facts that are exact first: they may clash by themselves.  Then what was measured is reconciled
    with them, and all is solved with the figures it was moved to.                                */
 static struct solution *
@@ -285,8 +329,20 @@ solve_measured (struct arena *keep, struct core *exact, struct fault *fault)
     core_open (exact);
     return answer (keep, exact, network, fault);
   }
-  if (!system_reconcile (keep, exact->system, exact->options, &reconciled, fault)) {
-    return NULL;
+  struct fault own;
+  fault_init (&own, fault->arena);
+  if (!system_reconcile (keep, exact->system, exact->options, &reconciled, &own)) {
+    if (own.kind == MESSAGE_NOT_CONVERGED) {
+      solution = solve_without_measured (keep, exact, &own);
+    }
+    *fault = solution ? *fault : own;
+    return solution;
+  }
+  if (reconciled.status == BALANCE_RECONCILED && has_idle (exact, &reconciled)) {
+    solution = solve_without_measured (keep, exact, &own);
+    if (solution && solution->status == BALANCE_CONTRADICTORY) {
+      return solution;
+    }
   }
   for (size_t f = 0; f < network->facts; f++) {
     take[f] = true;
