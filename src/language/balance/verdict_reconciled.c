@@ -61,6 +61,17 @@ pair_text (const struct verdict_maker *m, double value, double u)
   return arena_format (m->arena, "%s +/- %.2g", figure_text (m->arena, value), u);
 }
 
+/* The unit of a figure; of a share of something else with what it is a share of, as typed.  */
+static const char *
+unit_text (const struct verdict_maker *m, const struct adjustment *a)
+{
+  const struct plant_fact *f = &m->plant->fact[a->fact];
+  const char *equals = strchr (f->words, '=');
+  const char *of = equals && f->line > 0 ? strstr (equals, " of ") : NULL;
+  bool share = m->plant->network.fact[a->fact].relation && of;
+  return share ? arena_format (m->arena, "%s%s", f->unit, of) : f->unit;
+}
+
 static void
 adjustment_row (struct verdict_maker *m, const struct adjustment *a)
 {
@@ -73,10 +84,8 @@ adjustment_row (struct verdict_maker *m, const struct adjustment *a)
                  : pair_text (m, a->moved_to * per, a->moved_to_u * per);
   row->cell[3] = a->class == FIGURE_REDUNDANT
                    ? arena_format (m->arena, "%+.2f u, z %s   %s", by,
-                                   arena_format (m->arena, "%.4g", fabs (a->z)),
-                                   m->plant->fact[a->fact].unit)
-                   : arena_format (m->arena, "nothing else checks it   %s",
-                                   m->plant->fact[a->fact].unit);
+                                   arena_format (m->arena, "%.4g", fabs (a->z)), unit_text (m, a))
+                   : arena_format (m->arena, "nothing else checks it   %s", unit_text (m, a));
 }
 
 static void
@@ -227,8 +236,8 @@ tell_eliminations (struct verdict_maker *m)
     const char *joined = verdict_joined (m, "or instead", &others);
     verdict_fact (m, i ? "and then" : "left out in turn",
                   arena_format (m->arena, "without %s%s%s%s chi2 is %.4g with %zu to spare; it "
-                                "would be %s", figure_name (m, a), *joined ? " (or " : "", joined,
-                                *joined ? ")" : "",
+                                "should then read %s", figure_name (m, a),
+                                *joined ? " (or " : "", joined, *joined ? ")" : "",
                                 e->chi2_left, e->freedom_left,
                                 fact_value_text (m, a->fact, e->implied)));
   }
