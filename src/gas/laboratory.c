@@ -260,8 +260,7 @@ laboratory_read (struct arena *arena, const char *bytes, size_t n,
 {
   struct laboratory *lab = ARENA_NEW (arena, struct laboratory);
   *lab = (struct laboratory) { .asked = asked, .words = words, .heading = NOWHERE,
-                               .unit_row = NOWHERE, .unit_column = NOWHERE,
-                               .sample_column = NOWHERE };
+                               .unit_row = NOWHERE, .unit_column = NOWHERE };
   if (!csv_open (&lab->csv, arena, asked->file, bytes, n, fault))
     return NULL;
   lab->csv.remarks = true;

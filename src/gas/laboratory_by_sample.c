@@ -5,6 +5,86 @@
 #include <string.h>
 #include "support/arena.h"
 #include "support/fault.h"
+#include "support/seen.h"
+
+/* ---- Names of samples ---- */
+
+/* The columns that name samples: the first, then those that tell apart what is called the same.  */
+enum { NAMING_MOST = 3 };
+struct naming { size_t column[NAMING_MOST], count; };
+
+static bool
+names_samples (const struct naming *n, size_t column)
+{
+  for (size_t i = 0; i < n->count; i++)
+    if (n->column[i] == column)
+      return true;
+  return false;
+}
+
+/* A row of means or totals among the samples.  */
+static bool
+is_total_row (const struct laboratory *lab, struct arena *arena, size_t row,
+              const struct naming *n)
+{
+  const size_t names = n->count > 0 ? n->column[0] : 0;
+  return heading_read (arena, lab->words, cell_slice (lab, row, names)).kind == HEADING_TOTAL;
+}
+
+/* "T1", or "T1, 2026-11-02".  */
+static const char *
+name_in_row (const struct laboratory *lab, struct arena *arena, size_t row,
+             const struct naming *n)
+{
+  const char *name = slice_text (arena, cell_slice (lab, row, n->column[0]));
+  for (size_t i = 1; i < n->count; i++) {
+    const struct slice more = cell_slice (lab, row, n->column[i]);
+    if (more.n > 0)
+      name = arena_format (arena, "%s, %s", name, slice_text (arena, more));
+  }
+  return name;
+}
+
+/* Do two rows from FIRST on have one name?  */
+static bool
+a_name_is_twice (const struct laboratory *lab, struct arena *arena, size_t first,
+                 const struct naming *n)
+{
+  struct seen seen = { 0 };
+  for (size_t r = first; r < lab->row_count; r++) {
+    if (is_total_row (lab, arena, r, n))
+      continue;
+    const char *name = name_in_row (lab, arena, r, n);
+    if (!seen_add (arena, &seen, name, strlen (name)))
+      return true;
+  }
+  return false;
+}
+
+/* A column headed sample, else the first of dates; where one name stands for several rows, dates,
+   times and runs beside it tell them apart.                                                     */
+static struct naming
+find_naming (const struct laboratory *lab, struct arena *arena, size_t first)
+{
+  struct naming n = { { 0 }, 0 };
+  size_t beside[NAMING_MOST], count = 0, own = NOWHERE;
+  for (size_t k = 0; k < lab->rows[lab->heading].count; k++) {
+    const enum heading_kind kind
+      = heading_read (arena, lab->words, cell_slice (lab, lab->heading, k)).kind;
+    if (kind == HEADING_SAMPLE && own == NOWHERE)
+      own = k;
+    else if ((kind == HEADING_DATE || kind == HEADING_SAMPLE) && count < NAMING_MOST)
+      beside[count++] = k;
+  }
+  if (own != NOWHERE)
+    n.column[n.count++] = own;
+  for (size_t i = 0; i < count && n.count < NAMING_MOST; i++)
+    if (n.count == 0 || a_name_is_twice (lab, arena, first, &n))
+      n.column[n.count++] = beside[i];
+  return n;
+}
+
+/* ---- Columns ---- */
 
 /* A column of uncertainties belongs to the component it names, or to the one before it.  */
 static bool
@@ -51,7 +131,7 @@ part_column (struct laboratory *lab, struct arena *arena, size_t column, const s
 
 static bool
 read_column (struct laboratory *lab, struct arena *arena, size_t column, size_t first_row,
-             size_t *date, struct fault *fault)
+             const struct naming *naming, struct fault *fault)
 {
   struct slice text = cell_slice (lab, lab->heading, column);
   struct heading h = heading_read (arena, lab->words, text);
@@ -62,13 +142,9 @@ read_column (struct laboratory *lab, struct arena *arena, size_t column, size_t 
   case HEADING_SPREAD:
     return spread_column (lab, arena, column, &h, fault);
   case HEADING_SAMPLE:
-    if (lab->sample_column == NOWHERE) {
-      lab->sample_column = column;
-      return true;
-    }
-    break;
   case HEADING_DATE:
-    *date = *date == NOWHERE ? column : *date;
+    if (names_samples (naming, column))
+      return true;
     break;
   case HEADING_EMPTY:
     if (!layout_column_has_figures (lab, column, first_row))
@@ -93,21 +169,15 @@ read_column (struct laboratory *lab, struct arena *arena, size_t column, size_t 
   return true;
 }
 
-/* A row of means or totals among the samples.  */
 static bool
-is_total_row (const struct laboratory *lab, struct arena *arena, size_t row, size_t names)
+read_sample_rows (struct laboratory *lab, struct arena *arena, size_t first,
+                  const struct naming *naming, struct fault *fault)
 {
-  return heading_read (arena, lab->words, cell_slice (lab, row, names)).kind == HEADING_TOTAL;
-}
-
-static bool
-read_sample_rows (struct laboratory *lab, struct arena *arena, size_t first, struct fault *fault)
-{
-  const size_t names = lab->sample_column;
+  const size_t names = naming->count > 0 ? naming->column[0] : NOWHERE;
   const size_t width = lab->rows[lab->heading].count;
   for (size_t r = first; r < lab->row_count; r++) {
     const struct csv_row *row = &lab->rows[r];
-    if (is_total_row (lab, arena, r, names == NOWHERE ? 0 : names)) {
+    if (is_total_row (lab, arena, r, naming)) {
       pass_over (lab, arena, arena_format (arena, "line %d (%s)", row->line,
                                            slice_text (arena, cell_slice (lab, r, names == NOWHERE
                                                                                  ? 0 : names))));
@@ -122,7 +192,7 @@ read_sample_rows (struct laboratory *lab, struct arena *arena, size_t first, str
     *s = (struct axis) { .index = r, .line = row->line, .spread = NOWHERE };
     s->column = names == NOWHERE ? 1 : cell_at (lab, r, names)->column;
     s->name = names == NOWHERE ? arena_format (arena, "%zu", lab->sample_count)
-                               : slice_text (arena, cell_slice (lab, r, names));
+                               : name_in_row (lab, arena, r, naming);
   }
   lab->numbered = names == NOWHERE;
   return true;
@@ -132,7 +202,6 @@ bool
 layout_by_sample (struct laboratory *lab, struct arena *arena, size_t heading,
                     struct fault *fault)
 {
-  size_t date = NOWHERE;
   lab->heading = heading;
   for (size_t r = 0; r < heading; r++)
     if (!layout_preface (lab, arena, r, fault))
@@ -140,11 +209,10 @@ layout_by_sample (struct laboratory *lab, struct arena *arena, size_t heading,
   if (layout_is_unit_row (lab, arena, heading + 1, NOWHERE))
     lab->unit_row = heading + 1;
   const size_t first = lab->unit_row != NOWHERE ? heading + 2 : heading + 1;
+  const struct naming naming = find_naming (lab, arena, first);
   for (size_t k = 0; k < lab->rows[heading].count; k++)
-    if (!read_column (lab, arena, k, first, &date, fault))
+    if (!read_column (lab, arena, k, first, &naming, fault))
       return false;
-  if (lab->sample_column == NOWHERE)
-    lab->sample_column = date;
-  return read_sample_rows (lab, arena, first, fault);
+  return read_sample_rows (lab, arena, first, &naming, fault);
 }
 

@@ -114,7 +114,7 @@ struct laboratory {
   bool by_rows;                   /* a component in each row */
   size_t names;                   /* the column of their names */
   size_t heading, unit_row;       /* rows, or NOWHERE */
-  size_t unit_column, sample_column;
+  size_t unit_column;
   struct axis *components, *samples;
   size_t component_count, sample_count;
   char decimal;

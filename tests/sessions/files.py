@@ -218,6 +218,8 @@ BAD = [
      "laboratory-sample", "2:1", 'none is called "C"'),
     ("two of one name", "sample,CH4,CO2\nA,60,40\nA,61,39\n", 'sample "A" mol%',
      "laboratory-sample", "3:1", "more than one"),
+    ("two of one name and day", "sample,date,CH4,CO2\nA,02.11.,60,40\nA,02.11.,61,39\n",
+     'sample "A, 02.11." mol%', "laboratory-sample", "3:1", "more than one"),
     ("two columns without names", "component,amount,result\nCH4,60,61\nCO2,40,39\n", "mol%",
      "laboratory-sample", "1:18", "neither has a sample's name"),
     ("dry or wet", "component,mol% dry,mol% wet\nCH4,60,58\nCO2,40,39\n", "",
@@ -286,6 +288,10 @@ GOOD = [
     ("samples numbered", "CH4,CO2,N2,H2S\n1,2,3,4\n60.5,38.25,1.2,0.05\n", 'sample "2" mol%'),
     ("samples by date", "date,CH4,CO2,N2,H2S\n2026-11-02,1,2,3,4\n"
      "2026-11-03,60.5,38.25,1.2,0.05\n", 'sample "2026-11-03" mol%'),
+    ("samples by date and time", "date,time,CH4,CO2,N2,H2S\n02.11.,08:00,1,2,3,4\n"
+     "02.11.,16:00,60.5,38.25,1.2,0.05\nMean,,30,20,2,2\n", 'sample "02.11., 16:00" mol%'),
+    ("one sampling point, a row a day", "sample,date,CH4,CO2,N2,H2S\nT1,02.11.,1,2,3,4\n"
+     "T1,03.11.,60.5,38.25,1.2,0.05\nT2,03.11.,1,2,3,4\n", 'sample "T1, 03.11." mol%'),
     ("of two units one is asked for", "component,mol%,ppm\nCH4,60.5,605000\nCO2,38.25,382500\n"
      "N2,1.2,12000\nH2S,0.05,500\n", "ppm"),
     ("of dry and wet one is asked for", "component,mol% dry,mol% wet\nCH4,60.5,1\nCO2,38.25,1\n"
