@@ -102,6 +102,10 @@ SAYS = (
      "enhancement factor 1.0748"),
     ("gas a = air wetted to 50 ppm", "water dew point of a at 50 bar(a)", "notes",
      "beyond the range of the enhancement factor"),
+    ("", "12000 Nm3/h * 50 mg/Nm3 in kg/h", "notes", "one gas, dry or wet, at the same conditions"),
+    ("let q = 12000 Nm3/h", "35 ppm * q in Nm3/h", "notes", "a flow times a concentration"),
+    ("", "3 m3 * 1.2 kg/m3 in kg", "no notes", "concentration"),
+    ("", "12000 Nm3/h * 5 % in Nm3/h", "no notes", "concentration"),
     # 335.05 Pa over liquid, 309.97 Pa over ice at 265.15 K (D. M. Murphy and T. Koop 2005).
     ("stream s = 1 kg/h of CH4 at 5 degC, 1 bar(a), dew point -8 degC", "H2O of s in ppm", "taken",
      "over ice, pure water (over supercooled liquid: +8.1 %)"),

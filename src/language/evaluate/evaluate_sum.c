@@ -324,6 +324,33 @@ scale_value (struct evaluation *ev, const struct node *node, struct value *v, do
 }
 
 static bool
+is_of_volume (const struct measure *m)
+{
+  return m->ratio == RATIO_NONE && (dimension_equal (m->dimension, DIMENSION_VOLUME)
+                                    || dimension_equal (m->dimension, DIMENSION_VOLUME_FLOW));
+}
+
+/* More than this, kg/m3, may be the density of a gas, of which hydrogen has the least: 0.08.  */
+#define CONTENTS_MOST 0.05
+
+static bool
+is_of_contents (const struct measure *m, double si)
+{
+  return (dimension_equal (m->dimension, DIMENSION_DENSITY) && si < CONTENTS_MOST)
+         || m->ratio == RATIO_MOLE || m->ratio == RATIO_MASS || m->ratio == RATIO_VOLUME;
+}
+
+/* 12000 Nm3/h * 50 mg/Nm3: nobody says whether both are dry, or at one oxygen.  */
+static void
+note_product (struct evaluation *ev, const struct value *a, const struct value *b)
+{
+  if (ev->result && ((is_of_volume (&a->measure) && is_of_contents (&b->measure, b->si))
+                     || (is_of_volume (&b->measure) && is_of_contents (&a->measure, a->si)))) {
+    note (ev, MESSAGE_NOTE_PRODUCT, NULL, NULL, NULL);
+  }
+}
+
+static bool
 multiply_quantities (struct evaluation *ev, const struct node *node, struct value *a,
                      const struct value *b)
 {
@@ -338,6 +365,9 @@ multiply_quantities (struct evaluation *ev, const struct node *node, struct valu
   }
   if (divide && fpclassify (b->si) == FP_ZERO) {
     return wrong (ev, MESSAGE_RANGE, node->b, "nothing can be divided by zero");
+  }
+  if (!divide) {
+    note_product (ev, a, b);
   }
   const double left_si = a->si;
   a->si = divide ? a->si / b->si : a->si * b->si;
