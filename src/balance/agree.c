@@ -263,7 +263,7 @@ follow_moves (struct work *work)
   system_reduce (work->scratch, work->system, REDUCE_CORE);
   system_left (work->scratch, work->system);
   if (typed->null) {
-    system_open (work->scratch, work->system);
+    system_open (work->scratch, work->system, NULL);
   }
   memcpy (work->v, work->system->particular, typed->columns * sizeof *work->v);
   return true;

@@ -232,7 +232,7 @@ void
 core_open (struct core *core)
 {
   if (!core->system->null) {
-    system_open (core->arena, core->system);
+    system_open (core->arena, core->system, core->options->interrupted);
     core->null = core->system->null;
   }
 }

@@ -385,7 +385,7 @@ loosened (struct work *work, size_t count, const size_t chosen[])
       null[j * count + k] = absent ? 0 : work->leaf[chosen[k]].dv[j] / work->system->scale[j];
     }
   }
-  core.freedom = columns_orthonormal (columns, count, count, null, 0, NULL);
+  core.freedom = columns_orthonormal (columns, count, count, null, 0, NULL, NULL);
   core.null = null_space_of (work->arena, columns, core.freedom, count, null);
   return core;
 }

@@ -116,7 +116,8 @@ fill (struct making *m, struct arena *scratch, const struct null_vectors *vector
   }
   for (size_t b = 0; b < m->space->blocks && !orthonormal; b++) {
     size_t wide = m->block[b].directions;
-    (void) columns_orthonormal (m->block[b].columns, wide, wide, base[b], 0, NULL);
+    (void) columns_orthonormal (m->block[b].columns, wide, wide, base[b], 0, NULL,
+                                vectors->interrupted);
   }
 }
 
@@ -160,7 +161,7 @@ null_space_of (struct arena *arena, size_t columns, size_t freedom, size_t strid
     }
     start[k + 1] = count;
   }
-  struct null_vectors vectors = { freedom, start, column, value };
+  struct null_vectors vectors = { freedom, start, column, value, NULL };
   struct null_space *space = make (arena, columns, &vectors, true);
   arena_destroy (scratch);
   return space;

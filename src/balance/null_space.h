@@ -6,6 +6,7 @@
 #ifndef BALANCE_NULL_SPACE_H
 #define BALANCE_NULL_SPACE_H
 
+#include <stdbool.h>
 #include <stddef.h>
 #include "support/check.h"
 
@@ -27,7 +28,12 @@ struct null_space {
 
 /* Any vectors, one behind the other, only what is not zero: vector k has column[start[k]] up to
    column[start[k + 1] - 1].  */
-struct null_vectors { size_t count; const size_t *start, *column; const double *value; };
+struct null_vectors {
+  size_t count;
+  const size_t *start, *column;
+  const double *value;
+  bool (*interrupted) (void);    /* or null; true ends it early, with nothing to be used */
+};
 
 /* The space of VECTORS, which are independent, made orthonormal.  */
 struct null_space *null_space_make (struct arena *, size_t columns, const struct null_vectors *)

@@ -204,13 +204,14 @@ columns_longest (const struct column v[], size_t first, size_t columns, size_t r
 
 size_t
 columns_orthonormal (size_t rows, size_t columns, size_t stride, double a[], size_t more,
-                     double along[])
+                     double along[], bool (*interrupted) (void))
 {
   struct arena *arena = arena_create ();
   struct column *v = ARENA_ARRAY (arena, columns + 1, struct column);
   size_t done = 0, best;
   columns_read (arena, v, columns, stride, rows, a, more, along);
-  while (done < columns && columns_longest (v, done, columns, rows, &best) > tolerance) {
+  while (done < columns && !(interrupted && interrupted ())
+         && columns_longest (v, done, columns, rows, &best) > tolerance) {
     struct column now = v[best];
     v[best] = v[done];
     for (size_t k = 0; k < done; k++) {          /* for the second time */

@@ -33,8 +33,9 @@ double *matrix_product (struct arena *, size_t count, size_t n, size_t width, co
 /* Makes the columns of A (ROWS x COLUMNS, STRIDE doubles a row) orthonormal and closes up the gaps
    of those that depend on others; how many are left.  ALONG (MORE rows of the same) is combined in
    the same way; null with MORE 0.  By modified Gram and Schmidt, twice (Bjorck, Numerical Methods
-   for Least Squares Problems, 1996, 2.4), the longest first.                                    */
+   for Least Squares Problems, 1996, 2.4), the longest first.  INTERRUPTED (or null) ends it early,
+   with nothing to be used.                                                                      */
 size_t columns_orthonormal (size_t rows, size_t columns, size_t stride, double a[], size_t more,
-                            double along[]);
+                            double along[], bool (*interrupted) (void));
 
 #endif

@@ -70,7 +70,7 @@ find_left (struct arena *arena, struct system *system)
       all[(i < s ? facts + i : i - s) * k + c] = y[i];
     }
   }
-  kept = columns_orthonormal (facts, k, k, all, s, &all[facts * k]);
+  kept = columns_orthonormal (facts, k, k, all, s, &all[facts * k], NULL);
   left = ARENA_ARRAY (arena, facts * kept + 1, double);
   r->structure = ARENA_ARRAY (arena, s * kept + 1, double);
   for (size_t i = 0; i < m && kept > 0; i++) {
@@ -212,14 +212,14 @@ find_particular (struct arena *arena, struct system *system)
 /* The null vectors of an elimination of the rows, by column of the network.  */
 static struct null_vectors
 null_vectors (struct arena *arena, const struct reduction *r,
-              const struct elimination *elimination)
+              const struct elimination *elimination, bool (*interrupted) (void))
 {
   size_t n = r->a.columns, d = n - elimination_rank (elimination), count = 0, room = 4 * n + 64;
   size_t *start = ARENA_ARRAY (arena, d + 1, size_t), *column = NULL;
   double *x = ARENA_ARRAY (arena, n + 1, double), *value = NULL;
   column = ARENA_ARRAY (arena, room, size_t);
   value = ARENA_ARRAY (arena, room, double);
-  for (size_t k = 0; k < d; k++) {
+  for (size_t k = 0; k < d && !(interrupted && interrupted ()); k++) {
     if (count + n > room) {
       size_t *more = ARENA_ARRAY (arena, 2 * room, size_t);
       double *values = ARENA_ARRAY (arena, 2 * room, double);
@@ -238,15 +238,15 @@ null_vectors (struct arena *arena, const struct reduction *r,
     }
     start[k + 1] = count;
   }
-  return (struct null_vectors) { d, start, column, value };
+  return (struct null_vectors) { d, start, column, value, interrupted };
 }
 
 void
-system_open (struct arena *arena, struct system *system)
+system_open (struct arena *arena, struct system *system, bool (*interrupted) (void))
 {
   struct arena *scratch = arena_create ();
   struct null_vectors vectors = null_vectors (scratch, system->reduction,
-                                              system->reduction->elimination);
+                                              system->reduction->elimination, interrupted);
   system->null = null_space_make (arena, system->columns, &vectors);
   arena_destroy (scratch);
   if (system->freedom > 0) {
@@ -390,7 +390,8 @@ null_of (struct arena *arena, const struct system *system,
          const struct elimination *elimination)
 {
   struct arena *scratch = arena_create ();
-  struct null_vectors vectors = null_vectors (scratch, system->reduction, elimination);
+  struct null_vectors vectors = null_vectors (scratch, system->reduction, elimination,
+                                              NULL);
   struct null_space *null = null_space_make (arena, system->columns, &vectors);
   arena_destroy (scratch);
   return null;

@@ -12,8 +12,9 @@ struct arena;
    columns are left to dense algebra; REDUCE_CORE is what pays.                                  */
 enum { REDUCE_CORE = 100 };
 void system_reduce (struct arena *, struct system *, size_t core);
-/* Adds the null space, which with little known is large.  */
-void system_open (struct arena *, struct system *);
+/* Adds the null space, which with little known is large.  INTERRUPTED (or null) ends it early, with
+   nothing to be used.  */
+void system_open (struct arena *, struct system *, bool (*interrupted) (void));
 /* Adds the left null vectors, if they are not there.  */
 void system_left (struct arena *, struct system *);
 /* COUNT pseudorandom combinations of them, [fact row * COUNT + k]: where every one of these is

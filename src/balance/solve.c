@@ -207,8 +207,7 @@ answer (struct arena *keep, const struct core *core, const struct network *typed
    not known.  Either they agree within their digits, and the stream is open after all; or they
    clash as they would with a flow.                                                              */
 static struct solution *
-solve_exact (struct arena *keep, const struct core *core, const struct network *typed,
-             struct fault *fault)
+solve_exact (struct arena *keep, const struct core *core, struct fault *fault)
 {
   struct solution *solution;
   struct idle idle = { core, NULL };
@@ -216,7 +215,7 @@ solve_exact (struct arena *keep, const struct core *core, const struct network *
   if (!idle_look (keep, &idle, fault)) {
     return NULL;
   }
-  solution = answer (keep, idle.core, typed, fault);
+  solution = answer (keep, idle.core, core->network, fault);
   if (!solution || solution->conflict) {
     return solution;
   }
@@ -247,27 +246,6 @@ settle (struct arena *arena, const struct network *network, const struct solutio
                || (reconciled->by_digits && reconciled->by_digits[f]);
   }
   return network_settle (arena, network, moved, reconciled->value);
-}
-
-/* MOVED without the digits of what was measured or counted so: it is known to within its
-   uncertainty, and nothing hangs on how it was typed.                                           */
-static const struct network *
-unmeasured (struct arena *arena, const struct network *network, const struct network *moved,
-            const struct solution *reconciled)
-{
-  struct network *out = ARENA_NEW (arena, struct network);
-  struct fact *facts = ARENA_ARRAY (arena, network->facts + 1, struct fact);
-  for (size_t f = 0; f < network->facts; f++) {
-    facts[f] = moved->fact[f];
-    if (fact_is_measured (network, &network->fact[f])
-        || (reconciled->by_digits && reconciled->by_digits[f])) {
-      facts[f].rounding = 0;
-      facts[f].fractions_rounding = NULL;
-    }
-  }
-  *out = *moved;
-  out->fact = facts;
-  return out;
 }
 
 /* Takes over what only reconciliation knows.  */
@@ -305,7 +283,7 @@ solve_without_measured (struct arena *keep, const struct core *exact, struct fau
   fault_init (&unheard, exact->arena);
   const struct core *core = core_make (exact->arena, exact->network, exact->system->take,
                                        exact->options, &unheard);
-  struct solution *solution = core ? solve_exact (keep, core, core->network, &unheard) : NULL;
+  struct solution *solution = core ? solve_exact (keep, core, &unheard) : NULL;
   if (unheard.kind == MESSAGE_INTERRUPTED) {
     *own = unheard;
     return NULL;
@@ -372,8 +350,7 @@ solve_measured (struct arena *keep, struct core *exact, struct fault *fault)
   moved = settle (exact->arena, network, &reconciled);
   core = core_make (exact->arena, moved, take, exact->options, fault);
   if (core) {
-    solution = solve_exact (keep, core, unmeasured (exact->arena, network, moved, &reconciled),
-                            fault);
+    solution = solve_exact (keep, core, fault);
   }
   if (solution) {
     take_over (solution, &reconciled);
@@ -396,8 +373,7 @@ network_solve (struct arena *keep, const struct network *network,
   core = measured ? core_outline (arena, network, take, options, fault)
                   : core_make (arena, network, take, options, fault);
   if (core) {
-    solution = measured ? solve_measured (keep, core, fault)
-                        : solve_exact (keep, core, network, fault);
+    solution = measured ? solve_measured (keep, core, fault) : solve_exact (keep, core, fault);
   }
   arena_destroy (arena);
   return solution;

@@ -287,6 +287,53 @@ else
   skip "no pipe can be made" "Ctrl-C ends a run and leaves the session"
 fi
 
+# long WHAT: trunk.gw, whose balance takes minutes, ends at Ctrl-C with all as it was before.
+long() {
+  plays "Ctrl-C ends $1 of a balance and leaves the session" << 'END'
+see gas | 
+type let q = 12 kg\r
+see gas | 
+type open "trunk.gw"\r
+pause 500
+type \x03
+see stopped by the user; nothing was changed
+see gas | 
+type q in g\r
+see 12000.0  g
+see gas | 
+type show trunk\r
+see nothing is called 'trunk'
+see gas | 
+type \x04
+end 0
+END
+}
+# A line of units of which little is known.
+awk 'BEGIN {
+  print "let q = 13 kg\nbalance trunk\ncomponents CH4, CO2, N2, H2, O2, Ar\nknown m0 = 1000 kmol/h"
+  for (u = 1; u <= 400; u++) printf "separate u%d: m%d = s%d + m%d\n", u, u - 1, u, u
+  for (u = 1; u <= 400; u += 5) printf "known CH4 of s%d = %d mol%%\n", u, 10 + u % 70
+  print "end" }' > trunk.gw
+long "the ranges"
+# Meters of which one in ten is far off, left out one after the other.
+awk 'BEGIN {
+  print "let q = 13 kg\nbalance trunk"
+  srand(4); t = 400000
+  for (u = 1; u <= 9000; u++) printf "separate u%d: m%d = s%d + m%d\n", u, u - 1, u, u
+  for (u = 1; u <= 9000; u++) {
+    s = 10 + 20 * rand(); t -= s
+    printf "known s%d = %.6g +/- %.6g kmol/h\n", u, s * (u % 10 ? 1 : 1.3), 0.01 * s
+    printf "known m%d = %.6g +/- %.6g kmol/h\n", u, t, 0.001 * t }
+  print "end" }' > trunk.gw
+long "the reconciliation"
+# A block of very many lines.
+awk 'BEGIN {
+  print "let q = 13 kg\nbalance trunk"
+  for (u = 1; u <= 120000; u++) printf "separate u%d: m%d = s%d + m%d\n", u, u - 1, u, u
+  for (u = 1; u <= 120000; u++) printf "known s%d = %d kmol/h\n", u, u % 90 + 1
+  print "end" }' > trunk.gw
+long "the reading"
+
 printf 'let q = 12 kg\nq in zz\nset digits 3\n' > config/gaswright/init
 plays "own settings are run first; a bad line costs only itself" << 'END'
 see /config/gaswright/init:2:6: no unit is called 'zz'

@@ -8,6 +8,7 @@
        see TEXT          waits until the screen has shown it, behind what was seen before
        never TEXT        the screen has not shown it so far, behind what was seen before
        size ROWSxCOLUMNS changes the size of the terminal
+       pause MS          lets that much time pass
        end STATUS        waits until the program ends, with that exit status
 
    Steering sequences, carriage returns and null bytes (padding for slow terminals) are left out of
@@ -194,6 +195,15 @@ end (struct play *play, const char *want)
 }
 
 static bool
+pause_for (const char *text)
+{
+  struct timespec left = { atol (text) / 1000, atol (text) % 1000 * 1000000L };
+  while (nanosleep (&left, &left) != 0 && errno == EINTR) {
+  }
+  return true;
+}
+
+static bool
 step (struct play *play, char *line)
 {
   char *space = strchr (line, ' ');
@@ -209,6 +219,8 @@ step (struct play *play, char *line)
     return never (play, text);
   if (strncmp (line, "size", verb) == 0)
     return resize (play, text);
+  if (strncmp (line, "pause", verb) == 0)
+    return pause_for (text);
   if (strncmp (line, "end", verb) == 0)
     return end (play, text);
   printf ("no such step\n");

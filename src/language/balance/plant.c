@@ -30,7 +30,8 @@ read_given_stream (struct reader_state *r, const void *stream)
   return plant_read_given (r, *(const size_t *) stream);
 }
 
-/* Every line that says something, and the streams that were defined before.  */
+/* Every line that says something, and the streams that were defined before.  Kinds of its own:
+   interrupted.  */
 static bool
 read_facts (struct reader_state *r, const struct statement *block, const struct plant *base)
 {
@@ -41,6 +42,10 @@ read_facts (struct reader_state *r, const struct statement *block, const struct 
       return false;
     }
   for (const struct statement *line = block->next; line; line = line->next) {
+    bool (*interrupted) (void) = r->ev->session->options.interrupted;
+    if (interrupted && interrupted ()) {
+      return fault_set_at (r->ev->fault, MESSAGE_INTERRUPTED, line->at, NULL, NULL);
+    }
     r->line = line;
     r->number++;
     bool known = line->kind == STATEMENT_KNOWN || line->kind == STATEMENT_ABSENT;

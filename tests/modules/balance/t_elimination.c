@@ -110,7 +110,8 @@ one (struct arena *arena, size_t rows, size_t columns, size_t dependent, size_t 
       nulls[j * (columns - rank) + k] = x[j];
     }
   }
-  SAME_INT (columns_orthonormal (columns, columns - rank, columns - rank, nulls, 0, NULL),
+  SAME_INT (columns_orthonormal (columns, columns - rank, columns - rank, nulls, 0, NULL,
+                                 NULL),
             columns - rank);
   for (size_t k = 0; k < rows - rank; k++) {
     elimination_left (e, k, back);
@@ -151,7 +152,7 @@ static void
 orthonormal (void)
 {
   double a[] = { 3, 1, 4, 0, 2, 2, 4, 0, 4 }, along[] = { 1, 10, 11 };
-  SAME_INT (columns_orthonormal (3, 3, 3, a, 1, along), 2);
+  SAME_INT (columns_orthonormal (3, 3, 3, a, 1, along, NULL), 2);
   NEAR (a[0] * a[0] + a[3] * a[3] + a[6] * a[6], 1, 1e-14);
   NEAR (a[0] * a[1] + a[3] * a[4] + a[6] * a[7], 0, 1e-14);
 }

@@ -168,6 +168,45 @@ order_keeps_fill_low (void)
   arena_destroy (arena);
 }
 
+/* In a line each column has a neighbour on either side, that which is left of it is eliminated into
+   it.  From the ends inwards every column would wait for half of all; in parts it waits for its own
+   and for a few between.  */
+static void
+order_is_shallow (void)
+{
+  enum { N = 4000 };
+  static size_t at[N + 2], left[N + 2], right[N + 2], depth[N + 2], most;
+  struct arena *arena = arena_create ();
+  struct sparse line = sparse_make (arena, N, 2 * N);
+  for (size_t i = 0; i + 1 < N; i++) {
+    sparse_begin (&line);
+    sparse_add (&line, i, 1);
+    sparse_add (&line, i + 1, 1);
+  }
+  struct sets sets = { line.count, line.start, line.column };
+  size_t *order = column_order (arena, N, 1, &sets);
+  for (size_t k = 0; k < N; k++) {
+    at[order[k] + 1] = k + 1;
+    left[k + 1] = k;
+    right[k + 1] = k + 2;
+  }
+  for (size_t k = 0; k < N; k++) {      /* who waits for it: its neighbour that goes next */
+    size_t j = order[k] + 1, l = left[j], r = right[j];
+    NEED (at[j] == k + 1);
+    right[l] = r;
+    left[r] = l;
+    if (l >= 1) {
+      depth[l] = depth[l] > depth[j] ? depth[l] : depth[j] + 1;
+    }
+    if (r <= N) {
+      depth[r] = depth[r] > depth[j] ? depth[r] : depth[j] + 1;
+    }
+    most = depth[j] > most ? depth[j] : most;
+  }
+  CHECK (most < 200);
+  arena_destroy (arena);
+}
+
 /* ---- Two hundred units ---- */
 
 /* A line of units, each with a bypass of the next; the flows are known, their meters err.  Each
@@ -229,6 +268,7 @@ large_networks_reconcile (void)
 static const struct test_case cases[] = {
   { "the dense and the sparse way agree", both_ways_agree },
   { "what all rows share is eliminated last", order_keeps_fill_low },
+  { "a long line is eliminated from many places", order_is_shallow },
   { "a line of two hundred units is reconciled", large_networks_reconcile },
   { NULL, NULL }
 };

@@ -14,7 +14,7 @@ enum { COLUMNS = 7 };
 static const size_t start[] = { 0, 2, 3, 5, 8 };
 static const size_t column[] = { 0, 4, 2, 3, 1, 4, 5, 0 };
 static const double value[] = { 1, 2, -3, 4, 3, 1, 1, 1 };
-static const struct null_vectors vectors = { 4, start, column, value };
+static const struct null_vectors vectors = { 4, start, column, value, NULL };
 
 static void
 blocks (void)

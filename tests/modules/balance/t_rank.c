@@ -55,7 +55,7 @@ collinear_blend (void)
   }
   system = system_make (plant->arena, &plant->network, take_all, NULL);
   system_reduce (plant->arena, system, REDUCE_CORE);
-  system_open (plant->arena, system);
+  system_open (plant->arena, system, NULL);
   SAME_INT (system->present, 12);
   SAME_INT (system->rows.count, 12);
   SAME_INT (system->rank, 11);
@@ -81,7 +81,7 @@ narrows_by_bends (void)
   plant_composition (plant, 'F', x);
   system = system_make (plant->arena, &plant->network, take_all, NULL);
   system_reduce (plant->arena, system, REDUCE_CORE);
-  system_open (plant->arena, system);
+  system_open (plant->arena, system, NULL);
   SAME_INT (system->freedom, 3);
   SAME_INT (system_narrow (plant->arena, system, v)->freedom, 1);
   plant_free (plant);
