@@ -146,21 +146,44 @@ awk -v n="$splits" 'BEGIN {
 set -- $("$measure" 5 "$work/splits" "$program")
 row "$splits splits typed coarsely" "$1 ms, $3 kB" "below 500 ms"
 
-# typed WAY UNITS AIM: a metered line of units, read, reconciled and printed
+# typed WAY UNITS AIM: a balance read, solved and printed; see typed.awk
 typed() {
   awk -v units="$2" -v way="$1" -f "$(dirname "$0")/typed.awk" > "$work/typed"
   # shellcheck disable=SC2046  # three words
   set -- "$@" $("$measure" 3 "$work/typed" "$program")
-  row "$2 metered units typed, $1" "$4 ms, $6 kB" "$3"
+  row "$2 units typed, $1" "$4 ms, $6 kB" "$3"
   took=$4
+  held=$6
 }
 
-typed gas 100 "below 100 ms"
-typed gas 1000 "below 1500 ms"
-typed flows 100 "below 100 ms"
-short=$took
-typed flows 1000 "below 1500 ms"
-typed flows 10000 ""
-row "grows with the units to the power" \
-  "$(awk -v a="$short" -v b="$took" 'BEGIN { printf "%.2f", log(b / a) / log(100) }')" "1.2 at most"
+# growth UNITS: of what was typed last over what took SHORT and SMALL with a hundredth of the units
+growth() {
+  row "  grows with the units to the power" \
+    "$(awk -v a="$short" -v b="$took" 'BEGIN { printf "%.2f", log(b / a) / log(100) }')" \
+    "1.2 at most"
+  row "  memory a unit" \
+    "$(awk -v a="$small" -v b="$held" -v n="$1" 'BEGIN { printf "%.1f", (b - a) / (0.99 * n) }') kB" \
+    "does not grow"
+}
+
+# All six components.
+typed known 10 "below 5 ms"
+typed known 100 "below 50 ms"
+short=$took small=$held
+typed known 1000 "below 500 ms"
+typed known 10000 "below 5000 ms"
+growth 10000
+typed spare 1000 "below 500 ms"
+typed gas 10 "below 5 ms"
+typed gas 100 "below 50 ms"
+short=$took small=$held
+typed gas 1000 "below 500 ms"
+typed gas 10000 "below 5000 ms"
+growth 10000
+# One.
+typed flows 100 "below 50 ms"
+short=$took small=$held
+typed flows 1000 "below 500 ms"
+typed flows 10000 "below 5000 ms"
+growth 10000
 "$equations"
