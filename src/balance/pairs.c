@@ -200,7 +200,8 @@ pairs_find (struct arena *keep, const struct core *core, const bool set[],
   bool cut = each * (double) facts * (double) conflict->count > most_work;
   prepare (&work);
   for (size_t f = 0; f < facts && !cut; f++) {
-    for (size_t g = 0; g < facts && set[f] && work.solved < MOST_SOLVED; g++) {
+    const bool clashes = set[f] && is_checked (&work, f);       /* with a row of its own */
+    for (size_t g = 0; g < facts && clashes && work.solved < MOST_SOLVED; g++) {
       struct suspect pair[2];
       bool plausible;
       if (g == f || (set[g] && g < f) || !is_checked (&work, g)) {
