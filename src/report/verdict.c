@@ -67,7 +67,13 @@ facts_add (struct text *out, const struct report_style *style, const struct bala
 {
   for (const struct verdict_row *row = v->facts; row != NULL; row = row->next) {
     text_add_repeated (out, ' ', MARGIN);
-    column_add (out, style, row->cell[0], LABEL_COLUMN);
+    if (shown_width (style, row->cell[0]) < LABEL_COLUMN)
+      column_add (out, style, row->cell[0], LABEL_COLUMN);
+    else {                                       /* a label of many words has a line to itself */
+      shown_add (out, style, row->cell[0]);
+      text_add_char (out, '\n');
+      text_add_repeated (out, ' ', MARGIN + LABEL_COLUMN);
+    }
     const struct fold fold = fold_here (out);
     shown_add (out, style, row->cell[1]);
     end_line (out, style, fold);

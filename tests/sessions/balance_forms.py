@@ -364,6 +364,12 @@ def spreads(tap):
                                 "MW gross: gross, combustion 15 degC",
                                 "taken: combustion at 15 degC") if line not in said],
              "what flows asked for stand on is said")
+    some = session.answers(block(
+        "mix unit: a + b = c", "known a = 100 ± 1 kmol/h of (CH4 60, CO2 40 mol%)",
+        "known b = 50 ± 1 kmol/h", "known CO2 of b = 5 mol%", "known c = 151 ± 2 kmol/h",
+        "known CO2 of c = 28.2 ± 0.5 mol%"))[-1]
+    tap.tell([] if "exact, having no ±: composition of a, CO2 of b = 5 mol%" in some["taken"]
+             else some["taken"], "what has no ± beside what has is exact, and that is said")
     wide = session.run("\n".join([
         "balance wide", "mix unit: in-a + in-b = out", "known in-a = 10 ± 1 Nm3/h of air",
         "known in-b = 20 ± 1 Nm3/h of air", "end", "solve wide", ""]), "text")[1]

@@ -269,7 +269,7 @@ close_balance (struct verdict_maker *m)
   }
   if (!plant->whole && !isnan (s->mass_in)) {
     verdict_fact (m, "mass in and out",
-                  arena_format (m->arena, "%s and %s kg/h; largest mismatch of any equation %.1g "
+                  arena_format (m->arena, "%s and %s kg/h; largest mismatch %.1g "
                                 "of the largest flow", figure_text (m->arena, s->mass_in * 3600),
                                 figure_text (m->arena, s->mass_out * 3600), s->mismatch));
   } else {

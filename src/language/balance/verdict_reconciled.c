@@ -273,6 +273,39 @@ tell_held (struct verdict_maker *m)
   }
 }
 
+/* Is a fact without any ± one that might be off in its last digit?  */
+static bool
+is_held_exact (const struct plant *plant, size_t f)
+{
+  const struct fact *fact = &plant->network.fact[f];
+  size_t n = plant->network.components;
+  bool rounded = fact->rounding > 0, uncertain = fact->u > 0;
+  for (size_t c = 0; fact->kind == FACT_COMPOSITION && c < n; c++) {
+    rounded = rounded || (fact->fractions_rounding && fact->fractions_rounding[c] > 0);
+    uncertain = uncertain || (fact->fractions_u && fact->fractions_u[c] > 0);
+  }
+  return rounded && !uncertain;
+}
+
+static void
+tell_exact (struct verdict_maker *m)
+{
+  const bool *by_digits = m->solution->by_digits;
+  struct text_list lines = { .at = NULL };
+  for (size_t f = 0; f < m->plant->fact_count; f++)
+    if (is_held_exact (m->plant, f) && !(by_digits && by_digits[f])) {
+      bool part = m->plant->network.fact[f].kind == FACT_COMPOSITION;
+      text_list_add (m->arena, &lines,
+                     part ? arena_format (m->arena, "composition of %s",
+                                          m->plant->stream[m->plant->fact[f].stream].name)
+                          : m->plant->fact[f].words);
+    }
+  const char *joined = verdict_joined (m, "counted as exact", &lines);
+  if (lines.count > 0 && m->ev->result) {
+    result_remark (m->ev->result, MESSAGE_TAKEN_EXACT, joined, NULL);
+  }
+}
+
 static void
 tell_by_digits (struct verdict_maker *m)
 {
@@ -298,9 +331,9 @@ verdict_reconciled (struct verdict_maker *m)
   v->freedom = s->freedom;
   v->passed = s->passed;
   v->head = s->freedom == 0 ? "nothing to spare: no figure checks another"
-            : arena_format (m->arena, "%zu to spare; global test %.6g, limit %.4g, p %.2g: %s",
-                            s->freedom, s->chi2, s->critical, s->p,
-                            s->passed ? "they agree" : "THEY DO NOT AGREE, a gross error");
+            : arena_format (m->arena, "%s%zu to spare; global test %.4g, limit %.4g, p %.2g%s",
+                            s->passed ? "" : "THEY DO NOT AGREE, a gross error; ", s->freedom,
+                            s->chi2, s->critical, s->p, s->passed ? ": they agree" : "");
   tell_adjustments (m);
   tell_most_moved (m);
   if (s->freedom > 0) {
@@ -310,5 +343,6 @@ verdict_reconciled (struct verdict_maker *m)
   tell_leaks (m);
   tell_eliminations (m);
   tell_by_digits (m);
+  tell_exact (m);
   tell_held (m);
 }
