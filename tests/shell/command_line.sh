@@ -234,13 +234,13 @@ if mkfifo questions answers; then
   status=$?
   tell "$([ "$status" = 143 ] || echo "status $status")" \
     "so has one while an answer waits for its reader"
-  kill "$watch" 2> found
+  kill -KILL "$watch" 2> found
   exec 8<&-
 
   # Nobody writes: a pipe that is only opened.
   "$GASWRIGHT" questions > out 2> err &
   program=$!
-  sleep 0.1
+  sleep 0.5
   kill -TERM "$program"
   exec 7<> questions
   exec 7>&-

@@ -16,6 +16,7 @@ struct verdict_maker {
   struct verdict_list **last_list;
   double per;                              /* flows are told as value * per ... */
   const char *unit;                        /* ... in this */
+  const bool *named_twice;                 /* verdict_reconciled.c: by adjustment */
 };
 
 /* A growing list of texts, each once.  */

@@ -4,9 +4,11 @@
 #include "language/balance/verdict_private.h"
 
 #include <math.h>
+#include <stdint.h>
 #include <string.h>
 #include "result/result.h"
 #include "support/arena.h"
+#include "support/map.h"
 
 /* Up to the blanks before its '='; 0: there is none.  */
 static size_t
@@ -20,19 +22,26 @@ left_length (const struct plant_fact *f)
   return n;
 }
 
-/* Is something else stated of the same, as by two analyses of one stream?  */
-static bool
-stands_twice (const struct verdict_maker *m, const struct plant_fact *f)
+/* Marks the figures of which something else is stated, too, as by two analyses of one stream: by
+   adjustment, in M->named_twice.                                                                */
+static void
+find_twice (struct verdict_maker *m)
 {
-  const size_t n = left_length (f);
-  for (size_t i = 0; i < m->solution->adjustment_count; i++) {
-    const struct plant_fact *other = &m->plant->fact[m->solution->adjustments[i].fact];
-    if (other->stream == f->stream && other->line != f->line && left_length (other) == n
-        && strncmp (other->words, f->words, n) == 0) {
-      return true;
+  const struct solution *s = m->solution;
+  bool *twice = ARENA_ARRAY (m->arena, s->adjustment_count + 1, bool);
+  struct map *first = map_create ();
+  for (size_t i = 0; i < s->adjustment_count; i++) {
+    const struct plant_fact *f = &m->plant->fact[s->adjustments[i].fact];
+    const size_t n = left_length (f);
+    const size_t before = n > 0 ? (size_t) (uintptr_t) map_find (first, f->words, n) : 0;
+    if (n > 0 && before == 0) {
+      map_put (first, f->words, n, (void *) (uintptr_t) (i + 1));
+    } else if (before > 0 && m->plant->fact[s->adjustments[before - 1].fact].line != f->line) {
+      twice[i] = twice[before - 1] = true;
     }
   }
-  return false;
+  map_destroy (first);
+  m->named_twice = twice;
 }
 
 /* What a figure is called: its stream, or the component of it.  */
@@ -48,7 +57,7 @@ figure_name (const struct verdict_maker *m, const struct adjustment *a)
   }
   const size_t n = left_length (f);
   if (n > 0) {
-    return stands_twice (m, f) ? arena_format (m->arena, "%.*s (line %zu)", (int) n, f->words,
+    return m->named_twice[a - m->solution->adjustments] ? arena_format (m->arena, "%.*s (line %zu)", (int) n, f->words,
                                                f->line)
            : arena_copy (m->arena, f->words, n);
   }
@@ -325,6 +334,7 @@ verdict_reconciled (struct verdict_maker *m)
 {
   const struct solution *s = m->solution;
   struct balance_verdict *v = m->verdict;
+  find_twice (m);
   v->tested = s->freedom > 0;
   v->chi2 = s->chi2;
   v->critical = s->critical;
