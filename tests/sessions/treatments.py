@@ -61,6 +61,8 @@ def each_says(tap):
             ("lab without air by N2+Ar normalised", r"of air taken away, N2\+Ar as tracer"),
             ("lab without air by N2+Ar normalised", r"of O2, and 1\.1 mol% is there"),
             ("lab without air by N2+Ar normalised", r"the other tracer, O2 5\.25\d* mol%"),
+            ("(N2 77, O2 20, CO2 3 mol%) without air normalised",
+             r"most of it was air; .* moves the rest by 21\.1 %"),
             ("damp dried", r"H2O taken away \(10 mol%\)"),
             ("lab normalised wetted to 5 mol%", r"water added: .*5 mol%"),
             ("damp wetted to 5 mol%", r"water taken away: "))

@@ -57,9 +57,9 @@ figure_name (const struct verdict_maker *m, const struct adjustment *a)
   }
   const size_t n = left_length (f);
   if (n > 0) {
-    return m->named_twice[a - m->solution->adjustments] ? arena_format (m->arena, "%.*s (line %zu)", (int) n, f->words,
-                                               f->line)
-           : arena_copy (m->arena, f->words, n);
+    const char *name = arena_copy (m->arena, f->words, n);
+    return m->named_twice[a - m->solution->adjustments]
+             ? arena_format (m->arena, "%s (line %zu)", name, f->line) : name;
   }
   return f->stream != NO_STREAM ? plant->stream[f->stream].name : f->words;
 }

@@ -169,6 +169,18 @@ note_other_tracer (struct evaluation *ev, const struct change_of *c,
   }
 }
 
+/* Where more was taken away than is left, an error in it comes back multiplied.  */
+static void
+note_little_left (struct evaluation *ev, const struct change_of *c,
+                  const struct analysis *before, const struct treatment *did)
+{
+  double left = analysis_total (before) - did->gas;
+  if (left > 0 && did->gas > left) {
+    note (ev, MESSAGE_NOTE_LITTLE_LEFT, c->name, c->node->b->text,
+          rough_text (ev->arena, did->gas / left));
+  }
+}
+
 /* What the tracer took, and where that is more oxygen than there is.  */
 static void
 note_removed_by (struct evaluation *ev, const struct change_of *c, const struct analysis *before,
@@ -187,6 +199,7 @@ note_removed_by (struct evaluation *ev, const struct change_of *c, const struct 
   if (did->skipped && *did->skipped) {
     note (ev, MESSAGE_NOTE_SKIPPED, did->skipped, NULL, NULL);
   }
+  note_little_left (ev, c, before, did);
   note_other_tracer (ev, c, before, first);
 }
 
