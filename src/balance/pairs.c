@@ -204,7 +204,7 @@ pairs_find (struct arena *keep, const struct core *core, const bool set[],
     for (size_t g = 0; g < facts && clashes && work.solved < MOST_SOLVED; g++) {
       struct suspect pair[2];
       bool plausible;
-      if (g == f || (set[g] && g < f) || !is_checked (&work, g)) {
+      if (g == f || (g < f && set[g]) || !is_checked (&work, g)) {
         continue;
       }
       if (!try_pair (&work, (size_t[]) { f, g }, pair, &plausible, fault)) {

@@ -185,13 +185,14 @@ sheet_figures (struct evaluation *ev, const void *with, struct figures *figures)
   const struct statement *sheet = with;
   struct line *lines;
   struct value whole, v;
-  struct settings filled = *ev->settings;
+  struct settings *filled = ARENA_NEW (ev->arena, struct settings);
   const struct settings *settings = ev->settings;
   const size_t n = lines_of (ev->arena, sheet, &lines);
   bool done = evaluate (ev, sheet->value, NULL, &whole);
   const double base = done && whole.kind == VALUE_STREAM ? claimed (ev, &whole) : 1;
-  fill_open (&filled);
-  ev->settings = &filled;
+  *filled = *settings;
+  fill_open (filled);
+  ev->settings = filled;
   *figures = (struct figures) { ARENA_ARRAY (ev->arena, n, struct figure), 0, n };
   for (size_t i = 0; done && i < n; i++) {
     done = evaluate (ev, lines[i].node, NULL, &v);
