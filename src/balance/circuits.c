@@ -4,6 +4,7 @@
 #include <math.h>
 #include <string.h>
 #include "support/arena.h"
+#include "support/vector.h"
 
 enum { MOST_DIMENSIONS = 32 };
 /* Choices of rows that are looked at: a second or so.  */
@@ -19,29 +20,19 @@ struct work {
   void *data;
 };
 
-static double
-dot (size_t n, const double a[], const double b[])
-{
-  double sum = 0;
-  for (size_t i = 0; i < n; i++) {
-    sum += a[i] * b[i];
-  }
-  return sum;
-}
-
 /* Keeps each direction once.  */
 static void
 different_rows (struct work *work, size_t rows, const double z[])
 {
   size_t k = work->k;
   for (size_t i = 0; i < rows; i++) {
-    double size = sqrt (dot (k, &z[i * k], &z[i * k])), *next = &work->row[work->rows * k];
+    double size = vector_norm (k, &z[i * k]), *next = &work->row[work->rows * k];
     bool again = size <= nothing;
     for (size_t c = 0; c < k && !again; c++) {
       next[c] = z[i * k + c] / size;
     }
     for (size_t other = 0; other < work->rows && !again; other++) {
-      again = fabs (dot (k, &work->row[other * k], next)) > 1 - nothing * nothing;
+      again = fabs (vector_dot (k, &work->row[other * k], next)) > 1 - nothing * nothing;
     }
     work->rows += again ? 0 : 1;
   }
@@ -55,7 +46,7 @@ narrow (size_t k, size_t left, const double base[], const double row[], double o
 {
   double u[MOST_DIMENSIONS], size = 0, along;
   for (size_t b = 0; b < left; b++) {
-    u[b] = dot (k, &base[b * k], row);
+    u[b] = vector_dot (k, &base[b * k], row);
     size += u[b] * u[b];
   }
   size = sqrt (size);
@@ -63,7 +54,7 @@ narrow (size_t k, size_t left, const double base[], const double row[], double o
     return false;
   }
   u[0] += u[0] < 0 ? -size : size;
-  along = dot (left, u, u);
+  along = vector_dot (left, u, u);
   for (size_t b = 1; b < left; b++) {
     for (size_t c = 0; c < k; c++) {
       double sum = 0;

@@ -5,6 +5,7 @@
 #include <string.h>
 #include "balance/factor.h"
 #include "support/arena.h"
+#include "support/vector.h"
 
 enum { HALVINGS = 40, CORRECTIONS = 8 };
 /* Exact rows that are met so far are as good as met, if it comes no nearer.  */
@@ -36,20 +37,10 @@ descent_init (struct descent *s)
 
 /* ---- Measures of a point ---- */
 
-static double
-squares (const double e[], size_t n)
-{
-  double sum = 0;
-  for (size_t i = 0; i < n; i++) {
-    sum += e[i] * e[i];
-  }
-  return sum;
-}
-
 double
 descent_squares (const struct tangent *t)
 {
-  return squares (t->e, t->figures);
+  return vector_dot (t->figures, t->e, t->e);
 }
 
 /* What an exact row is short of, LEFT of it, beyond what is to be.  */
