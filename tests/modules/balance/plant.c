@@ -4,7 +4,10 @@
 #include <assert.h>
 #include <math.h>
 #include <string.h>
+#include "balance/solution.h"
+#include "libtest.h"
 #include "support/arena.h"
+#include "support/fault.h"
 
 enum { MOST_BOUNDARIES = 60, MOST_FACTS = 200, MOST_REACTIONS = 8 };
 
@@ -171,4 +174,17 @@ plant_share (struct plant *plant, char outlet, char inlet, double value)
   return add (plant, (struct fact) { .kind = FACT_SHARE, .value = value, .relation = true,
                                      .stream = plant_stream (plant, outlet),
                                      .of = plant_stream (plant, inlet) });
+}
+
+const struct solution *
+plant_solved (struct plant *plant)
+{
+  static const struct solve_options usual = { 0.95, NULL };
+  struct fault fault;
+  const struct solution *solution;
+  fault_init (&fault, plant->arena);
+  solution = network_solve (plant->arena, &plant->network, &usual, &fault);
+  CHECK (solution != NULL);
+  SAME_INT (fault.kind, MESSAGE_NONE);
+  return solution;
 }

@@ -48,4 +48,8 @@ size_t plant_ratio (struct plant *, char left, size_t of_left, char right, size_
                     double);
 size_t plant_share (struct plant *, char outlet, char inlet, double);
 
+struct solution;
+/* The network solved as usual; a fault fails the case.  */
+const struct solution *plant_solved (struct plant *);
+
 #endif

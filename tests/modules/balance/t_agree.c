@@ -5,22 +5,6 @@
 #include "libtest.h"
 #include "plant.h"
 #include "balance/solution.h"
-#include "support/arena.h"
-#include "support/fault.h"
-
-static const struct solve_options usual = { 0.95, NULL };
-
-static const struct solution *
-solve (struct plant *plant)
-{
-  struct fault fault;
-  const struct solution *solution;
-  fault_init (&fault, plant->arena);
-  solution = network_solve (plant->arena, &plant->network, &usual, &fault);
-  CHECK (solution != NULL);
-  SAME_INT (fault.kind, MESSAGE_NONE);
-  return solution;
-}
 
 /* Both shares of a split: 97 % and OTHER, which is stated to a tenth.  */
 static struct plant *
@@ -42,7 +26,7 @@ static void
 shares_agree (void)
 {
   struct plant *plant = two_shares (0.032);
-  const struct solution *solution = solve (plant);
+  const struct solution *solution = plant_solved (plant);
   double b = 850 * (0.032 - 0.002 * 0.0025 / 0.2525);
   SAME_INT (solution->status, BALANCE_REDUNDANT);
   SAME_INT (solution->count.surplus, 1);
@@ -62,7 +46,7 @@ static void
 shares_at_the_limit (void)
 {
   struct plant *plant = two_shares (0.03545);
-  const struct solution *solution = solve (plant);
+  const struct solution *solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_REDUNDANT);
   CHECK (fabs (solution->value[plant_column (plant, 'A', 0)] / 510 - 0.97) < 0.0050075);
   CHECK (fabs (solution->value[plant_column (plant, 'B', 0)] / 510 - 0.03545) < 0.00050075);
@@ -74,7 +58,7 @@ static void
 shares_beyond_the_limit (void)
 {
   struct plant *plant = two_shares (0.036);
-  const struct solution *solution = solve (plant);
+  const struct solution *solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_CONTRADICTORY);
   plant_free (plant);
 }
@@ -123,7 +107,7 @@ many_agree (void)
   for (int i = 1; i <= SPLITS; i++) {
     state_shares (plant, i, 0.97, 0.034);
   }
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_REDUNDANT);
   SAME_INT (solution->count.surplus, SPLITS);
   NEAR (solution->value[plant_column (plant, 1, 0)], 51 / pow (on, SPLITS), 1e-10);
@@ -143,7 +127,7 @@ one_of_many_clashes (void)
   for (int i = 1; i <= SPLITS; i++) {
     state_shares (plant, i, 0.97, i == 20 ? 0.04 : 0.032);
   }
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_CONTRADICTORY);
   NEED (solution->conflict != NULL);
   for (size_t i = 0; i < solution->conflict->count; i++) {
@@ -178,7 +162,7 @@ sum_of_many (void)
       plant->fact[plant_total (plant, s, 1)].rounding = 0.05;
     }
     plant->fact[plant_total (plant, 101, sums[k].sum)].rounding = 0.05;
-    SAME_INT (solve (plant)->status, sums[k].status);
+    SAME_INT (plant_solved (plant)->status, sums[k].status);
     plant_free (plant);
   }
 }
@@ -199,7 +183,7 @@ outlets_in_a_ratio (void)
     if (both) {
       plant_share (plant, 'B', 'F', 0.8);
     }
-    solution = solve (plant);
+    solution = plant_solved (plant);
     SAME_INT (solution->status, both ? BALANCE_REDUNDANT : BALANCE_DETERMINED);
     SAME_INT (solution->count.surplus, both);
     NEAR (solution->value[plant_column (plant, 'A', 1)], 6, 1e-12);

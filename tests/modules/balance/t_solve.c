@@ -5,22 +5,7 @@
 #include "libtest.h"
 #include "plant.h"
 #include "balance/solution.h"
-#include "support/arena.h"
 #include "support/fault.h"
-
-static const struct solve_options usual = { 0.95, NULL };
-
-static const struct solution *
-solve (struct plant *plant)
-{
-  struct fault fault;
-  const struct solution *solution;
-  fault_init (&fault, plant->arena);
-  solution = network_solve (plant->arena, &plant->network, &usual, &fault);
-  CHECK (solution != NULL);
-  SAME_INT (fault.kind, MESSAGE_NONE);
-  return solution;
-}
 
 static double
 flow (const struct plant *plant, const struct solution *solution, char stream, size_t c)
@@ -68,7 +53,7 @@ short_by_one (void)
   plant_total (plant, 'F', 850);
   plant_composition (plant, 'F', x);
   plant_fraction (plant, 'P', 0, 0.97);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_UNDERDETERMINED);
   same_count (solution->count, (struct count) { 6, 2, 0, 3, 5, 1, 0 });
   CHECK (solution->fixed_total[0] && !solution->fixed_total[1] && !solution->fixed_total[2]);
@@ -106,7 +91,7 @@ three_sources (void)
   plant_composition (plant, 'A', air);
   plant_composition (plant, 'O', pure_oxygen);
   plant_composition (plant, 'N', pure_nitrogen);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   same_count (solution->count, (struct count) { 6, 2, 0, 3, 5, 1, 0 });
   NEED (solution->left_count == 2);
   SAME_INT (solution->left[0].stream, 1);
@@ -138,7 +123,7 @@ recycle_with_purge (void)
   plant_ratio (plant, 'P', 0, 'I', 0, 0.70);
   plant_ratio (plant, 'P', 1, 'I', 1, 0.05);
   plant_share (plant, 'V', 'R', 0.2);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_DETERMINED);
   same_count (solution->count, (struct count) { 12, 6, 1 + 3, 2, 12, 0, 0 });
   NEAR (flow (plant, solution, 'I', 0), 75 / (1 - 0.8 * 0.3), 1e-12);
@@ -160,7 +145,7 @@ scale_is_open (void)
   plant_fraction (plant, 'F', 0, 0.21);
   plant_fraction (plant, 'P', 0, 0.25);
   plant_ratio (plant, 'W', ALL, 'F', ALL, 0.8);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->count.missing, 1);
   CHECK (solution->scale_open);
   NEAR (fraction (plant, solution, 'W', 0), 0.2, 1e-12);
@@ -187,7 +172,7 @@ collinear_blend (void)
     plant_fraction (plant, "ABCP"[s], 0, a[s]);
     plant_fraction (plant, "ABCP"[s], 1, 0.3);
   }
-  solution = solve (plant);
+  solution = plant_solved (plant);
   same_count (solution->count, (struct count) { 12, 3, 0, 9, 11, 1, 1 });
   SAME_INT (solution->status, BALANCE_UNDERDETERMINED);
   for (size_t s = 0; s < 4; s++) {
@@ -215,7 +200,7 @@ backwards (void)
   plant_fraction (plant, 'F', 0, 0.5);
   plant_fraction (plant, 'P', 0, 0.6);
   plant_fraction (plant, 'W', 0, 0.55);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_DETERMINED);
   NEAR (total (plant, solution, 'P'), -100, 1e-12);
   NEED (solution->negative_count == 2);
@@ -234,7 +219,7 @@ fixed_by_sign (void)
   plant_boundary (plant, BOUNDARY_SEPARATE, "P", "W");
   plant_total (plant, 'W', 10);
   plant_flow (plant, 'W', 0, 10);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   CHECK (solution->fixed[plant_column (plant, 'A', 1)]);
   CHECK (solution->fixed[plant_column (plant, 'B', 1)]);
   NEAR (flow (plant, solution, 'A', 1), 0, 1e-12);
@@ -256,7 +241,7 @@ reaction (void)
   plant_total (plant, 'F', 17);
   plant_composition (plant, 'F', x);
   plant_ratio (plant, 'P', 0, 'F', 0, 0.2);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_DETERMINED);
   same_count (solution->count, (struct count) { 6, 3, 1, 2, 6, 0, 0 });
   NEAR (solution->value[6], 8, 1e-12);
@@ -279,7 +264,7 @@ dependent_reactions (void)
   plant_total (plant, 'F', 17);
   plant_composition (plant, 'F', x);
   plant_ratio (plant, 'P', 0, 'F', 0, 0.2);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->count.missing, 1);
   CHECK (solution->fixed[plant_column (plant, 'P', 2)]);
   CHECK (!solution->fixed[6] && !solution->fixed[7]);
@@ -304,7 +289,7 @@ dry_basis (void)
   plant_dry_fraction (plant, 'G', 2, 3, 0.1);
   plant_fraction (plant, 'A', 1, 0.21);
   plant_dry_fraction (plant, 'P', 1, 3, 0.09);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_DETERMINED);
   NEAR (total (plant, solution, 'A'), 220, 1e-12);
   plant_free (plant);
@@ -323,7 +308,7 @@ traces (void)
   plant_total (plant, 'B', 10);
   plant_fraction (plant, 'B', 1, 0.3);
   plant_fraction (plant, 'B', 2, 0.015);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   NEAR (fraction (plant, solution, 'P', 2), 0.155 / 1010, 1e-11);
   plant_free (plant);
 }
@@ -338,7 +323,7 @@ whole_flows (void)
   plant_total (plant, 'F', 100);
   plant_share (plant, 'A', 'F', 0.25);
   plant_total (plant, 'B', 40);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_DETERMINED);
   same_count (solution->count, (struct count) { 4, 1, 1, 2, 4, 0, 0 });
   NEAR (flow (plant, solution, 'C', 0), 35, 1e-12);
@@ -360,7 +345,7 @@ share_from_flow (void)
   plant_ratio (plant, 'T', 0, 'I', 0, 0.8);
   plant_ratio (plant, 'T', 1, 'I', 1, 0.1);
   plant_total (plant, 'P', 45);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_DETERMINED);
   same_count (solution->count, (struct count) { 12, 6, 3, 3, 12, 0, 0 });
   NEAR (flow (plant, solution, 'I', 0), 56.25, 1e-10);
@@ -385,7 +370,7 @@ purge_from_whole (void)
   plant_fraction (plant, 'F', 1, 0.02);
   plant_total (plant, 'C', 60);
   plant_total (plant, 'L', 160);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_DETERMINED);
   same_count (solution->count, (struct count) { 11, 6, 1, 4, 11, 0, 0 });
   NEAR (fraction (plant, solution, 'P', 1), 0.05, 1e-12);
@@ -407,7 +392,7 @@ share_open (void)
   plant_fraction (plant, 'F', 0, 0.5);
   plant_ratio (plant, 'T', 0, 'I', 0, 0.8);
   plant_ratio (plant, 'T', 1, 'I', 1, 0.1);
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_UNDERDETERMINED);
   SAME_INT (solution->count.missing, 1);
   CHECK (!solution->fixed_fraction[plant_column (plant, 'P', 0)]);
@@ -434,7 +419,7 @@ three_meters (void)
   plant->fact[0].u = 9;
   plant->fact[1].u = 5;
   plant->fact[2].u = 6;
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_RECONCILED);
   same_count (solution->count, (struct count) { 3, 1, 0, 3, 3, 0, 1 });
   NEAR (solution->value[0], 850 - 10 * 81.0 / 142, 1e-9);
@@ -457,7 +442,7 @@ measured_and_open (void)
   plant_total (plant, 'F', 850);
   plant_total (plant, 'A', 510);
   plant->fact[0].u = 9;
-  solution = solve (plant);
+  solution = plant_solved (plant);
   SAME_INT (solution->status, BALANCE_UNDERDETERMINED);
   SAME_INT (solution->count.missing, 1);
   NEAR (solution->total_range[2].greatest, 340, 1e-12);
